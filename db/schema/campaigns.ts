@@ -1,0 +1,65 @@
+import type { Generated, Selectable } from 'kysely'
+import type { Role } from './people'
+import type { IsoTime, Json } from './values'
+
+export interface CampaignTable {
+  id: Generated<number>
+  slug: string
+  name: string
+  survey: string
+  acronym: string
+  /** In order of wavelength, shortest first. */
+  bands: Json<string[]>
+  /** How a file name tells candidate and band, such as `{candidate}_{band}.fits`; null takes that default. */
+  name_pattern: string | null
+  /** km/s/Mpc */
+  hubble_constant: Generated<number>
+  omega_matter: Generated<number>
+  created_by: number
+  created_at: IsoTime
+}
+export type Campaign = Selectable<CampaignTable>
+
+export interface MembershipTable {
+  id: Generated<number>
+  campaign_id: number
+  person_id: number
+  role: Role
+  /** Stands for the person in releases; never changes. */
+  pseudonym: string
+  created_at: IsoTime
+  ended_at: IsoTime | null
+}
+export type Membership = Selectable<MembershipTable>
+
+export interface MeanParameters {
+  confirmMean: number
+  setAsideMean: number
+  splitSpread: number
+}
+
+export interface RuleTable {
+  id: Generated<number>
+  campaign_id: number
+  version: number
+  method: 'mean'
+  grades_wanted: number
+  least_grades: number
+  parameters: Json<MeanParameters>
+  created_by: number
+  created_at: IsoTime
+}
+export type Rule = Selectable<RuleTable>
+
+export interface RecipeTable {
+  id: Generated<number>
+  campaign_id: number
+  version: number
+  /** The imaging recipe of lib/science/imaging/recipe.ts as canonical JSON. */
+  parameters: string
+  /** SHA-256 of `parameters`. */
+  hash: string
+  created_by: number
+  created_at: IsoTime
+}
+export type RecipeRow = Selectable<RecipeTable>

@@ -1,0 +1,34 @@
+import type { CampaignTable, MembershipTable, RecipeTable, RuleTable } from './campaigns'
+import type { DesignationTable, EntryTable } from './catalogue'
+import type { RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
+import type { GradeTable, LeaseTable } from './grading'
+import type { BatchTable, CandidateTable, FileTable, ManifestRowTable, PlaneTable, StampTable } from './intake'
+import type { InvitationTable, PersonTable } from './people'
+import type { AuditEventTable, JobTable, MailTable, SiteTable } from './platform'
+
+export interface DB {
+  site: SiteTable
+  person: PersonTable
+  campaign: CampaignTable
+  membership: MembershipTable
+  invitation: InvitationTable
+  rule: RuleTable
+  recipe: RecipeTable
+  batch: BatchTable
+  file: FileTable
+  manifest_row: ManifestRowTable
+  candidate: CandidateTable
+  state_change: StateChangeTable
+  plane: PlaneTable
+  stamp: StampTable
+  lease: LeaseTable
+  grade: GradeTable
+  run: RunTable
+  verdict: VerdictTable
+  ruling: RulingTable
+  designation: DesignationTable
+  entry: EntryTable
+  job: JobTable
+  mail: MailTable
+  audit_event: AuditEventTable
+}

@@ -1,0 +1,115 @@
+import type { Generated, Selectable } from 'kysely'
+import type { IsoTime, Json } from './values'
+
+export interface BatchTable {
+  id: Generated<number>
+  campaign_id: number
+  name: string
+  created_by: number
+  created_at: IsoTime
+}
+export type Batch = Selectable<BatchTable>
+
+export type FileFate = 'stored' | 'read' | 'imaged' | 'duplicate' | 'refused'
+
+export interface FileTable {
+  id: Generated<number>
+  campaign_id: number
+  batch_id: number
+  /** The name it was delivered under, folders included. */
+  name: string
+  kind: 'fits' | 'manifest'
+  sha256: string
+  bytes: number
+  fate: FileFate
+  /** A stable word for why it was refused, such as `truncated-data` or `no-band`. */
+  fault: string | null
+  /** The sentence for people. */
+  reason: string | null
+  duplicate_of: number | null
+  replaced_by: number | null
+  created_by: number
+  created_at: IsoTime
+  updated_at: IsoTime
+}
+export type FileRow = Selectable<FileTable>
+
+export interface ManifestRowTable {
+  id: Generated<number>
+  campaign_id: number
+  file_id: number
+  line: number
+  file_name: string | null
+  candidate: string | null
+  band: string | null
+  ra_deg: number | null
+  dec_deg: number | null
+  pixel_scale_arcsec: number | null
+  score: number | null
+  lens_redshift: number | null
+  source_redshift: number | null
+}
+export type ManifestRow = Selectable<ManifestRowTable>
+
+export type CandidateState = 'open' | 'split' | 'confirmed' | 'set aside'
+export type StateCause = 'verdict' | 'ruling'
+
+export interface CandidateTable {
+  id: Generated<number>
+  campaign_id: number
+  name: string
+  /** ICRS degrees; null until a header or a manifest has told. */
+  ra_deg: number | null
+  dec_deg: number | null
+  pixel_scale_arcsec: number | null
+  /** What the machine search gave it. */
+  score: number | null
+  lens_redshift: number | null
+  source_redshift: number | null
+  /** Set on calibration stamps only; never leaves the server before the grade is given. */
+  truth: 'lens' | 'not a lens' | null
+  imaged_at: IsoTime | null
+  /** Standing first grades, 'cannot judge' included. */
+  grades_given: Generated<number>
+  state: Generated<CandidateState>
+  state_cause: StateCause | null
+  state_cause_id: number | null
+  state_since: IsoTime
+  /** The newest verdict and the newest ruling. */
+  verdict_id: number | null
+  ruling_id: number | null
+  created_at: IsoTime
+}
+export type Candidate = Selectable<CandidateTable>
+
+export interface PlaneTable {
+  id: Generated<number>
+  candidate_id: number
+  band: string
+  file_id: number
+  hdu: number
+  plane_index: number
+  width: number
+  height: number
+  /** The Wcs object of lib/science/sky/wcs.ts. */
+  wcs: Json<unknown> | null
+  pixel_scale_arcsec: number | null
+  background: number | null
+  noise: number | null
+}
+export type Plane = Selectable<PlaneTable>
+
+export interface StampTable {
+  id: Generated<number>
+  campaign_id: number
+  candidate_id: number
+  recipe_id: number
+  /** A view key such as `colour`, `deep` or `band:g`. */
+  view: string
+  sha256: string
+  bytes: number
+  width: number
+  height: number
+  note: string | null
+}
+export type Stamp = Selectable<StampTable>

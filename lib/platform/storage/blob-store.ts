@@ -1,0 +1,100 @@
+import { createHash, randomUUID } from 'node:crypto'
+import { constants, createReadStream, type ReadStream } from 'node:fs'
+import { access, mkdir, open, readFile, rename, stat, unlink } from 'node:fs/promises'
+import path from 'node:path'
+
+/**
+ * Blobs named by the SHA-256 of their bytes, in `aa/bb/<hash>` below one folder. A blob is written under a temporary name,
+ * synced and renamed, so a name that exists has all of its bytes whatever happened to the process; the database row that
+ * names it comes after.
+ */
+export interface StoredBlob {
+  sha256: string
+  bytes: number
+}
+
+export class BlobStore {
+  constructor(
+    private readonly folder: string,
+    private readonly temporaryFolder: string,
+  ) {}
+
+  pathOf(sha256: string): string {
+    if (!/^[0-9a-f]{64}$/.test(sha256)) throw new Error(`Not a SHA-256 name: ${sha256}`)
+    return path.join(this.folder, sha256.slice(0, 2), sha256.slice(2, 4), sha256)
+  }
+
+  async has(sha256: string): Promise<boolean> {
+    return access(this.pathOf(sha256), constants.R_OK).then(
+      () => true,
+      () => false,
+    )
+  }
+
+  async put(bytes: Uint8Array): Promise<StoredBlob> {
+    const sha256 = createHash('sha256').update(bytes).digest('hex')
+    if (!(await this.has(sha256))) {
+      const temporary = await this.temporaryName()
+      const handle = await open(temporary, 'wx')
+      try {
+        await handle.writeFile(bytes)
+        await handle.sync()
+      } finally {
+        await handle.close()
+      }
+      await this.adopt(temporary, sha256)
+    }
+    return { sha256, bytes: bytes.byteLength }
+  }
+
+  /**
+   * Streams to disk while hashing, holding one chunk at a time. `onBytes` sees the running count and may throw to refuse the
+   * rest; nothing is left behind then, nor when the stream breaks.
+   */
+  async putStream(chunks: AsyncIterable<Uint8Array>, onBytes: (total: number) => void = () => {}): Promise<StoredBlob> {
+    const temporary = await this.temporaryName()
+    const hash = createHash('sha256')
+    let total = 0
+    const handle = await open(temporary, 'wx')
+    try {
+      for await (const chunk of chunks) {
+        total += chunk.byteLength
+        onBytes(total)
+        hash.update(chunk)
+        await handle.writeFile(chunk)
+      }
+      await handle.sync()
+      await handle.close()
+    } catch (error) {
+      await handle.close().catch(() => {})
+      await unlink(temporary).catch(() => {})
+      throw error
+    }
+    const sha256 = hash.digest('hex')
+    await this.adopt(temporary, sha256)
+    return { sha256, bytes: total }
+  }
+
+  async read(sha256: string): Promise<Uint8Array> {
+    return readFile(this.pathOf(sha256))
+  }
+
+  async size(sha256: string): Promise<number> {
+    return (await stat(this.pathOf(sha256))).size
+  }
+
+  stream(sha256: string): ReadStream {
+    return createReadStream(this.pathOf(sha256))
+  }
+
+  private async temporaryName(): Promise<string> {
+    await mkdir(this.temporaryFolder, { recursive: true })
+    return path.join(this.temporaryFolder, randomUUID())
+  }
+
+  private async adopt(temporary: string, sha256: string): Promise<void> {
+    const target = this.pathOf(sha256)
+    await mkdir(path.dirname(target), { recursive: true })
+    await rename(temporary, target)
+  }
+}

@@ -1,0 +1,102 @@
+/** How a candidate's stamps are made from its cutouts. Plain JSON, so that it can be stored, hashed and repeated. */
+
+/** Brightness limits in units of the sky noise of the picture, counted from the sky. */
+export interface LimitsSigma {
+  /** This far above (below, when negative) the sky is black. */
+  blackSigma: number
+  /** Where the curve turns from linear to logarithmic, above black. */
+  softeningSigma: number
+  /** White follows the picture: the value that this percentage of its pixels stays below ... */
+  whitePercentile: number
+  /** ... but never less than this, so that bare noise stays dark, ... */
+  leastWhiteSigma: number
+  /** ... nor more than this, so that a bright star does not hide all else. */
+  mostWhiteSigma: number
+}
+
+export interface ColourLimits extends LimitsSigma {
+  /** Colour fades to grey where the intensity, smoothed over 3 by 3 pixels, is below this: noise has no hue. */
+  hueFromSigma: number
+  /** Factor on the distance of each channel from grey; 1 leaves colours as they are. */
+  saturation: number
+}
+
+export interface DeepLimits extends LimitsSigma {
+  /** Smooth with the 3 by 3 binomial kernel first, which lifts what is wider than a pixel out of the noise. */
+  smooth: boolean
+}
+
+export interface Recipe {
+  version: 1
+  /** Keys of the views wanted, in the order in which they are shown. */
+  views: string[]
+  colour: ColourLimits
+  deep: DeepLimits
+  band: LimitsSigma
+  /** Factor on a band's noise-normalised brightness in the colour view, by band; 1 where none is given. */
+  weights?: Record<string, number>
+}
+
+export interface ViewName {
+  key: string
+  label: string
+}
+
+const BAND_PREFIX = 'band:'
+
+export const bandViewKey = (band: string): string => BAND_PREFIX + band
+
+/** The band of a band view's key, null for any other view. */
+export function bandOfView(key: string): string | null {
+  return key.startsWith(BAND_PREFIX) ? key.slice(BAND_PREFIX.length) : null
+}
+
+/** Colour, deep and each band, with limits chosen by eye on simulated and real cutouts (common practice, no source). */
+export function defaultRecipe(bands: string[]): Recipe {
+  return {
+    version: 1,
+    views: [...(bands.length > 1 ? ['colour'] : []), 'deep', ...bands.map(bandViewKey)],
+    colour: {
+      blackSigma: -1,
+      softeningSigma: 6,
+      whitePercentile: 99.8,
+      leastWhiteSigma: 40,
+      mostWhiteSigma: 600,
+      hueFromSigma: 0.8,
+      saturation: 1,
+    },
+    deep: {
+      blackSigma: -1,
+      softeningSigma: 4,
+      whitePercentile: 98,
+      leastWhiteSigma: 12,
+      mostWhiteSigma: 60,
+      smooth: true,
+    },
+    band: { blackSigma: -1.5, softeningSigma: 4, whitePercentile: 99.7, leastWhiteSigma: 15, mostWhiteSigma: 300 },
+  }
+}
+
+/** JSON with the keys of every object in code-unit order and no spaces: equal recipes give equal text, for hashing. */
+export function canonicalRecipe(recipe: Recipe): string {
+  return JSON.stringify(recipe, (_key, value: unknown) =>
+    value !== null && typeof value === 'object' && !Array.isArray(value)
+      ? Object.fromEntries(Object.entries(value).sort(([a], [b]) => (a < b ? -1 : a > b ? 1 : 0)))
+      : value,
+  )
+}
+
+/**
+ * The views of a recipe that exist for these bands, in order, with the label shown to people. A colour view needs two
+ * bands; a band view needs its band; unknown keys are left out.
+ */
+export function viewsOf(recipe: Recipe, bands: string[]): ViewName[] {
+  const views: ViewName[] = []
+  for (const key of recipe.views) {
+    const band = bandOfView(key)
+    if (key === 'colour' && bands.length > 1) views.push({ key, label: 'Colour' })
+    else if (key === 'deep' && bands.length > 0) views.push({ key, label: 'Deep' })
+    else if (band !== null && bands.includes(band)) views.push({ key, label: band })
+  }
+  return views
+}
