@@ -13,7 +13,7 @@ export function minMaxInterval(values: ArrayLike<number>): Interval {
   let low = Number.POSITIVE_INFINITY
   let high = Number.NEGATIVE_INFINITY
   for (let i = 0; i < values.length; i++) {
-    const value = values[i]!
+    const value = values[i]
     if (value - value !== 0) continue
     if (value < low) low = value
     if (value > high) high = value
@@ -63,8 +63,8 @@ export function zscale(values: ArrayLike<number>, options: ZscaleOptions = {}): 
   const sorted = takeSamples(finiteValues(values), most).sort()
   const count = sorted.length
   if (count === 0) return { ...NO_INTERVAL }
-  const least = sorted[0]!
-  const largest = sorted[count - 1]!
+  const least = sorted[0]
+  const largest = sorted[count - 1]
   const minimumGood = Math.max(minPixels, Math.floor(count * maxReject))
   const grow = Math.max(1, Math.floor(count * 0.01))
 
@@ -79,12 +79,12 @@ export function zscale(values: ArrayLike<number>, options: ZscaleOptions = {}): 
     bad = dilate(rejectOutliers(sorted, bad, line, rejectionSigma), grow)
     previousGood = good
     good = 0
-    for (let i = 0; i < count; i++) good += 1 - bad[i]!
+    for (let i = 0; i < count; i++) good += 1 - bad[i]
   }
   if (good < minimumGood) return { low: least, high: largest }
   if (contrast > 0) slope /= contrast
   const centre = Math.floor((count - 1) / 2)
-  const median = count % 2 === 1 ? sorted[centre]! : (sorted[centre]! + sorted[centre + 1]!) / 2
+  const median = count % 2 === 1 ? sorted[centre] : (sorted[centre] + sorted[centre + 1]) / 2
   return {
     low: Math.max(least, median - (centre - 1) * slope),
     high: Math.min(largest, median + (count - centre) * slope),
@@ -94,7 +94,7 @@ export function zscale(values: ArrayLike<number>, options: ZscaleOptions = {}): 
 function takeSamples(values: Float64Array, most: number): Float64Array {
   const stride = Math.floor(Math.max(1, values.length / most))
   const taken = new Float64Array(Math.min(most, Math.ceil(values.length / stride)))
-  for (let i = 0; i < taken.length; i++) taken[i] = values[i * stride]!
+  for (let i = 0; i < taken.length; i++) taken[i] = values[i * stride]
   return taken
 }
 
@@ -112,7 +112,7 @@ function fitLine(values: Float64Array, bad: Uint8Array): Line {
     if (bad[i]) continue
     count++
     rankSum += i
-    valueSum += values[i]!
+    valueSum += values[i]
   }
   const meanRank = rankSum / count
   const meanValue = valueSum / count
@@ -120,7 +120,7 @@ function fitLine(values: Float64Array, bad: Uint8Array): Line {
   let square = 0
   for (let i = 0; i < values.length; i++) {
     if (bad[i]) continue
-    cross += (i - meanRank) * (values[i]! - meanValue)
+    cross += (i - meanRank) * (values[i] - meanValue)
     square += (i - meanRank) ** 2
   }
   const slope = square > 0 ? cross / square : 0
@@ -135,12 +135,12 @@ function rejectOutliers(values: Float64Array, bad: Uint8Array, line: Line, sigma
   for (let i = 0; i < values.length; i++) {
     if (bad[i]) continue
     count++
-    sum += residual[i]!
+    sum += residual[i]
   }
   const mean = sum / count
-  for (let i = 0; i < values.length; i++) if (!bad[i]) squares += (residual[i]! - mean) ** 2
+  for (let i = 0; i < values.length; i++) if (!bad[i]) squares += (residual[i] - mean) ** 2
   const threshold = sigmas * Math.sqrt(squares / count)
-  return bad.map((was, i) => (was || Math.abs(residual[i]!) > threshold ? 1 : 0))
+  return bad.map((was, i) => (was || Math.abs(residual[i]) > threshold ? 1 : 0))
 }
 
 /** A sample becomes bad when any of the `width` samples round it is; an even width reaches one further to the left. */

@@ -37,9 +37,9 @@ export function luptonRgb(
   const perUnit = q / stretch
   const pixels = new Uint8Array(3 * r.length)
   for (let i = 0, out = 0; i < r.length; i++, out += 3) {
-    const red = r[i]! - minimumR
-    const green = g[i]! - minimumG
-    const blue = b[i]! - minimumB
+    const red = r[i] - minimumR
+    const green = g[i] - minimumG
+    const blue = b[i] - minimumB
     const intensity = (red + green + blue) / 3
     // Also refuses NaN; an infinite channel gives 0/0 or Infinity * 0 below and is written as 0.
     if (!(intensity > 0)) continue

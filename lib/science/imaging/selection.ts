@@ -13,15 +13,15 @@ export function selectRank(values: Float32Array | Float64Array, rank: number, co
   let left = 0
   let right = count - 1
   while (left < right) {
-    const pivot = medianOfThree(values[left]!, values[(left + right) >> 1]!, values[right]!)
+    const pivot = medianOfThree(values[left], values[(left + right) >> 1], values[right])
     let i = left
     let j = right
     while (i <= j) {
-      while (values[i]! < pivot) i++
-      while (values[j]! > pivot) j--
+      while (values[i] < pivot) i++
+      while (values[j] > pivot) j--
       if (i <= j) {
-        const held = values[i]!
-        values[i] = values[j]!
+        const held = values[i]
+        values[i] = values[j]
         values[j] = held
         i++
         j--
@@ -31,7 +31,7 @@ export function selectRank(values: Float32Array | Float64Array, rank: number, co
     else if (rank >= i) left = i
     else break
   }
-  return values[rank]!
+  return values[rank]
 }
 
 /** Median of `values[0..count)`, the mean of the two middle values when the count is even; NaN when empty. In place. */
@@ -60,7 +60,7 @@ export function selectQuantile(
   const share = position - rank
   if (share === 0 || rank + 1 >= count) return low
   let high = Number.POSITIVE_INFINITY
-  for (let i = rank + 1; i < count; i++) if (values[i]! < high) high = values[i]!
+  for (let i = rank + 1; i < count; i++) if (values[i] < high) high = values[i]
   return low + share * (high - low)
 }
 
@@ -69,15 +69,15 @@ export function finiteValues(values: ArrayLike<number>): Float64Array {
   const kept = new Float64Array(values.length)
   let count = 0
   for (let i = 0; i < values.length; i++) {
-    const value = values[i]!
+    const value = values[i]
     if (value - value === 0) kept[count++] = value
   }
   return kept.subarray(0, count)
 }
 
 function largestOf(values: Float32Array | Float64Array, count: number): number {
-  let largest = values[0]!
-  for (let i = 1; i < count; i++) if (values[i]! > largest) largest = values[i]!
+  let largest = values[0]
+  for (let i = 1; i < count; i++) if (values[i] > largest) largest = values[i]
   return largest
 }
 

@@ -1,5 +1,8 @@
 import { finiteValues, selectMedian } from './selection'
 
+export { medianAbsoluteDeviationSigma } from './mad'
+export { estimateNoise, type Noise } from './noise'
+
 export interface ClippedStatistics {
   mean: number
   median: number
@@ -9,9 +12,6 @@ export interface ClippedStatistics {
   kept: number
   iterations: number
 }
-
-/** 1 / (Phi^-1(3/4)): turns a median absolute deviation into the standard deviation of a normal distribution. */
-const MAD_TO_SIGMA = 1.482602218505602
 
 /**
  * Sigma-clipped statistics round the median.
@@ -34,7 +34,7 @@ export function clippedStatistics(
     const before = count
     count = 0
     for (let i = 0; i < before; i++) {
-      const value = kept[i]!
+      const value = kept[i]
       if (value >= median - reach && value <= median + reach) kept[count++] = value
     }
     if (count === before) break
@@ -43,23 +43,12 @@ export function clippedStatistics(
   return { mean, median: selectMedian(kept, count), std, kept: count, iterations }
 }
 
-/**
- * Robust standard deviation, 1.4826 median(|v - median(v)|), of the finite values; NaN when there is none.
- * Source: F. R. Hampel, JASA 69, 383 (1974); factor as in astropy.stats.mad_std.
- */
-export function medianAbsoluteDeviationSigma(values: ArrayLike<number>): number {
-  const work = finiteValues(values)
-  const median = selectMedian(work)
-  for (let i = 0; i < work.length; i++) work[i] = Math.abs(work[i]! - median)
-  return MAD_TO_SIGMA * selectMedian(work)
-}
-
 function moments(values: Float64Array, count: number): { mean: number; std: number } {
   if (count === 0) return { mean: Number.NaN, std: Number.NaN }
   let sum = 0
-  for (let i = 0; i < count; i++) sum += values[i]!
+  for (let i = 0; i < count; i++) sum += values[i]
   const mean = sum / count
   let squares = 0
-  for (let i = 0; i < count; i++) squares += (values[i]! - mean) ** 2
+  for (let i = 0; i < count; i++) squares += (values[i] - mean) ** 2
   return { mean, std: Math.sqrt(squares / count) }
 }

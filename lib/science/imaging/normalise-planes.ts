@@ -1,0 +1,43 @@
+/** Brings band planes to one scale, their own sky noise, which makes stamps independent of the unit of the pixels. */
+import { estimateNoise } from './noise'
+
+export interface BandPlane {
+  band: string
+  width: number
+  height: number
+  /** Row by row; row 0 is the bottom row, as in FITS. */
+  data: Float32Array
+}
+
+export interface NormalisedPlane {
+  band: string
+  width: number
+  height: number
+  /** (pixel - sky) / noise, rows as given; NaN where the pixel is not finite. */
+  values: Float32Array
+  /** Pixels that are not finite. */
+  missing: number
+  /** 'empty': no finite pixel. 'constant': all finite pixels equal, so there is nothing to see. */
+  state: 'usable' | 'constant' | 'empty'
+}
+
+/** @throws RangeError when the number of pixels is not width x height. */
+export function normalisePlane({ band, width, height, data }: BandPlane): NormalisedPlane {
+  if (data.length !== width * height) {
+    throw new RangeError(`Band ${band} has ${data.length} pixels, not ${width} x ${height}.`)
+  }
+  const { background, sigma, finiteFraction } = estimateNoise(data, width, height)
+  const values = new Float32Array(data.length)
+  const perSigma = sigma > 0 ? 1 / sigma : 0
+  let missing = 0
+  for (let i = 0; i < data.length; i++) {
+    const value = data[i]
+    if (value - value === 0) values[i] = (value - background) * perSigma
+    else {
+      values[i] = Number.NaN
+      missing++
+    }
+  }
+  const state = finiteFraction === 0 ? 'empty' : sigma > 0 ? 'usable' : 'constant'
+  return { band, width, height, values, missing, state }
+}

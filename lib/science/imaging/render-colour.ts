@@ -1,0 +1,93 @@
+/**
+ * The colour view: Lupton composite of noise-normalised planes. Where the light is weaker than the noise its hue is
+ * nothing but noise, so there colour is taken from smoothed channels and fades to grey; brightness stays native.
+ */
+import { channelWeights, mixPlanes } from './colour-channels'
+import { luptonFromLimits, luptonRgb } from './lupton'
+import type { NormalisedPlane } from './normalise-planes'
+import type { Recipe } from './recipe'
+import { MISSING_GREY } from './render-grey'
+import { smoothBinomial } from './smooth'
+import { whiteLevel } from './white-level'
+
+/** RGB interleaved, row 0 = top, from at least two usable planes of one size, shortest wavelength first. */
+export function renderColour(planes: NormalisedPlane[], recipe: Recipe): Uint8Array {
+  const { width, height } = planes[0]
+  const limits = recipe.colour
+  const bandWeights = planes.map((plane) => recipe.weights?.[plane.band] ?? 1)
+  const [red, green, blue] = channelWeights(planes.length).map((shares) =>
+    mixPlanes(
+      planes,
+      shares.map((share, k) => share * bandWeights[k]),
+    ),
+  ) as [Float32Array, Float32Array, Float32Array]
+  const missing = missingPixels(red, green, blue)
+  const [r, g, b, intensity] = calmHues(red, green, blue, width, height, recipe)
+  const white = whiteLevel(intensity, limits) - limits.blackSigma
+  const { stretch, Q } = luptonFromLimits(white, limits.softeningSigma)
+  const upward = luptonRgb(r, g, b, { minimum: limits.blackSigma, stretch, Q })
+  for (const i of missing) upward.fill(MISSING_GREY, 3 * i, 3 * i + 3)
+  return flipRows(upward, 3 * width, height)
+}
+
+function missingPixels(r: Float32Array, g: Float32Array, b: Float32Array): number[] {
+  const missing: number[] = []
+  for (let i = 0; i < r.length; i++) {
+    const sum = r[i] + g[i] + b[i]
+    if (sum !== sum) missing.push(i)
+  }
+  return missing
+}
+
+type Channels = [Float32Array, Float32Array, Float32Array, Float32Array]
+
+/** Channels with their hue calmed, and the intensity. Missing pixels come out as 0. */
+function calmHues(
+  red: Float32Array,
+  green: Float32Array,
+  blue: Float32Array,
+  width: number,
+  height: number,
+  { colour: { hueFromSigma, saturation } }: Recipe,
+): Channels {
+  const size = red.length
+  const intensity = new Float32Array(size)
+  const redness = new Float32Array(size)
+  const blueness = new Float32Array(size)
+  for (let i = 0; i < size; i++) {
+    const mean = (red[i] + green[i] + blue[i]) / 3
+    if (mean !== mean) continue
+    intensity[i] = mean
+    redness[i] = red[i] - mean
+    blueness[i] = blue[i] - mean
+  }
+  const smoothIntensity = smoothBinomial(intensity, width, height)
+  const smoothRedness = smoothBinomial(redness, width, height)
+  const smoothBlueness = smoothBinomial(blueness, width, height)
+  const r = new Float32Array(size)
+  const g = new Float32Array(size)
+  const b = new Float32Array(size)
+  const threshold = hueFromSigma * hueFromSigma
+  for (let i = 0; i < size; i++) {
+    const level = Math.max(0, smoothIntensity[i])
+    const power = level * level
+    // Full hue well above the threshold; native hue another factor of ten in power above that.
+    const hue = (saturation * power) / (power + threshold)
+    const native = power / (power + 100 * threshold)
+    const dRed = hue * (smoothRedness[i] + native * (redness[i] - smoothRedness[i]))
+    const dBlue = hue * (smoothBlueness[i] + native * (blueness[i] - smoothBlueness[i]))
+    const mean = intensity[i]
+    r[i] = mean + dRed
+    b[i] = mean + dBlue
+    g[i] = mean - dRed - dBlue
+  }
+  return [r, g, b, intensity]
+}
+
+function flipRows(pixels: Uint8Array, rowLength: number, height: number): Uint8Array {
+  const flipped = new Uint8Array(pixels.length)
+  for (let y = 0; y < height; y++) {
+    flipped.set(pixels.subarray(y * rowLength, (y + 1) * rowLength), (height - 1 - y) * rowLength)
+  }
+  return flipped
+}

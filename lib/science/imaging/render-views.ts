@@ -1,0 +1,107 @@
+/**
+ * All views of a candidate from its band planes. What cannot be shown rightly is not shown: a view is left out or drawn
+ * flat, and a note says why.
+ */
+import { normalisePlane, type BandPlane, type NormalisedPlane } from './normalise-planes'
+import { bandOfView, type Recipe } from './recipe'
+import { renderColour } from './render-colour'
+import { renderDeep } from './render-deep'
+import { MISSING_GREY, renderGrey } from './render-grey'
+import { bandNote, colourNote, deepNote, noColourNote, sizesNote } from './view-notes'
+
+export type { BandPlane } from './normalise-planes'
+
+export interface RenderedView {
+  /** As in the recipe: 'colour', 'deep', 'band:g', ... */
+  key: string
+  width: number
+  height: number
+  channels: 1 | 3
+  /** Row 0 is the top row; RGB interleaved when channels is 3. */
+  pixels: Uint8Array
+  /** What a viewer must know about this picture, in a sentence; null when nothing. */
+  note: string | null
+}
+
+/**
+ * The recipe's views that these planes allow, in the recipe's order.
+ * @param planes shortest wavelength first, row 0 = bottom. Bands may differ in size: each keeps its own band view, colour
+ *   and deep are made of the largest group of equal size.
+ * @returns an empty list for no planes. Never throws when each plane has width x height pixels, at least one.
+ */
+export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[] {
+  const all = planes.map(normalisePlane)
+  const wanted = recipe.views.flatMap((key) => bandOfView(key) ?? [])
+  const absent = wanted.filter((band) => !all.some((plane) => plane.band === band))
+  const group = largestGroup(all)
+  const left = all.filter((plane) => !group.includes(plane))
+  const noColour = recipe.views.includes('colour') ? noColourNote(group, all, absent) : null
+  const views: RenderedView[] = []
+  for (const key of recipe.views) {
+    const band = bandOfView(key)
+    const view =
+      key === 'colour'
+        ? noColour === null
+          ? colourView(group, left, absent, recipe)
+          : null
+        : key === 'deep'
+          ? deepView(group, left, absent, recipe)
+          : bandView(all.find((plane) => plane.band === band) ?? null, recipe)
+    if (view) views.push(view)
+  }
+  const first = views.find((view) => view.key === 'deep') ?? views[0]
+  if (noColour !== null && first) first.note = [noColour, first.note].filter(Boolean).join(' ')
+  return views
+}
+
+function colourView(
+  group: NormalisedPlane[],
+  left: NormalisedPlane[],
+  absent: string[],
+  recipe: Recipe,
+): RenderedView | null {
+  const usable = group.filter((plane) => plane.state === 'usable')
+  const { width, height } = usable[0]
+  const note = [sizesNote(left), colourNote(usable, group, absent)].filter(Boolean).join(' ') || null
+  return { key: 'colour', width, height, channels: 3, pixels: renderColour(usable, recipe), note }
+}
+
+function deepView(
+  group: NormalisedPlane[],
+  left: NormalisedPlane[],
+  absent: string[],
+  recipe: Recipe,
+): RenderedView | null {
+  const first = group[0]
+  if (!first) return null
+  const { width, height } = first
+  const usable = group.filter((plane) => plane.state === 'usable')
+  const pixels = usable.length > 0 ? renderDeep(usable, recipe.deep) : new Uint8Array(width * height).fill(MISSING_GREY)
+  const note = [sizesNote(left), deepNote(usable, group, absent)].filter(Boolean).join(' ') || null
+  return { key: 'deep', width, height, channels: 1, pixels, note }
+}
+
+function bandView(plane: NormalisedPlane | null, recipe: Recipe): RenderedView | null {
+  if (!plane) return null
+  const { width, height, values } = plane
+  const pixels =
+    plane.state === 'usable'
+      ? renderGrey(values, width, height, recipe.band)
+      : new Uint8Array(width * height).fill(MISSING_GREY)
+  return { key: `band:${plane.band}`, width, height, channels: 1, pixels, note: bandNote(plane) }
+}
+
+/** The planes that share the commonest size, in order; of equally common sizes that with the most pixels. */
+function largestGroup(planes: NormalisedPlane[]): NormalisedPlane[] {
+  const groups = new Map<string, NormalisedPlane[]>()
+  for (const plane of planes) {
+    const size = `${plane.width}x${plane.height}`
+    groups.set(size, [...(groups.get(size) ?? []), plane])
+  }
+  const usable = (group: NormalisedPlane[]) => group.filter((plane) => plane.state === 'usable').length
+  return [...groups.values()].reduce<NormalisedPlane[]>((best, group) => {
+    if (best.length === 0) return group
+    const more = usable(group) - usable(best) || group[0].values.length - best[0].values.length
+    return more > 0 ? group : best
+  }, [])
+}
