@@ -90,8 +90,8 @@ export function decide(rule: MeanRule, answers: readonly { grade: Answer }[]): D
     if (toCome > 0) return decision('open', `Open: ${n} of at least ${rule.leastGrades} grades so far${aside}.`)
     return decision(
       'split',
-      `Split: ${looks} of ${rule.gradesWanted} looks are in, but ${cannotJudge} could not judge; ` +
-        `${count(n, 'grade')} of at least ${rule.leastGrades}.`,
+      `Split: all ${rule.gradesWanted} wanted looks are in, but ${cannotJudge} could not judge and ` +
+        `only ${n} of at least ${rule.leastGrades} grades were given.`,
     )
   }
 

@@ -101,10 +101,11 @@ function recordsOf(text: string, firstLine: number, delimiter: string): CsvRecor
     newline: '\n',
     step: ({ data, errors, meta }) => {
       const isBlank = data.every((field) => field.trim() === '')
-      const breaks = countLineBreaks(text.slice(read, meta.cursor))
-      const fault = errors.length > 0 ? quoteFault(errors[0].code, line, line + Math.max(0, breaks - 1)) : null
+      const source = text.slice(read, meta.cursor)
+      const lastLine = line + countLineBreaks(source.replace(/\n$/, ''))
+      const fault = errors.length > 0 ? quoteFault(errors[0].code, line, lastLine) : null
       if (!isBlank || fault) records.push({ line, fields: data, fault })
-      line += breaks
+      line += countLineBreaks(source)
       read = meta.cursor
     },
   })
