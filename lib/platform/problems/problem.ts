@@ -24,7 +24,11 @@ export const signInNeeded = () => new Problem(401, 'sign-in-needed', 'Sign in fi
  * files exist.
  */
 export const notFound = (what: string) =>
-  new Problem(404, 'not-found', `There is no ${what} here that you may see. Check the address, or ask a lead to invite you.`)
+  new Problem(
+    404,
+    'not-found',
+    `There is no ${what} here that you may see. Check the address, or ask a lead to invite you.`,
+  )
 
 export const forbidden = (sentence: string) => new Problem(403, 'forbidden', sentence)
 export const invalid = (sentence: string, parameters: { name: string; reason: string }[] = []) =>

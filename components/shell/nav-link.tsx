@@ -1,0 +1,31 @@
+'use client'
+
+import Link from 'next/link'
+import { usePathname } from 'next/navigation'
+
+export function NavLink({
+  href,
+  label,
+  count,
+  exact,
+}: {
+  href: string
+  label: string
+  count?: number
+  exact?: boolean
+}) {
+  const path = usePathname()
+  const here = exact ? path === href : path === href || path.startsWith(`${href}/`)
+  return (
+    <Link
+      href={href}
+      aria-current={here ? 'page' : undefined}
+      className={`flex min-h-9 items-center justify-between gap-3 whitespace-nowrap rounded-control px-3 text-body ${
+        here ? 'bg-raise text-text shadow-[inset_2px_0_0_var(--lamp)]' : 'text-mute hover:text-text'
+      }`}
+    >
+      {label}
+      {count === undefined ? null : <span className="figures text-small">{count.toLocaleString('en')}</span>}
+    </Link>
+  )
+}

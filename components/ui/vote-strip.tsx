@@ -1,0 +1,51 @@
+/**
+ * A candidate's grades at a glance, the same wherever they stand: four cells from A to N, one dot a grade, and beside them how
+ * many could not judge. Brightness is certainty; the letters carry it too.
+ */
+export interface Votes {
+  A: number
+  B: number
+  C: number
+  N: number
+  U: number
+}
+
+const CELLS = [
+  { letter: 'A', dot: 'bg-grade-a', cell: 'bg-grade-a/26' },
+  { letter: 'B', dot: 'bg-grade-b', cell: 'bg-grade-b/26' },
+  { letter: 'C', dot: 'bg-grade-c', cell: 'bg-grade-c/26' },
+  { letter: 'N', dot: 'bg-grade-n', cell: 'bg-grade-n/26' },
+] as const
+
+/** More dots than this do not fit a cell and are written as a number. */
+const MOST_DOTS = 5
+
+export function describeVotes(votes: Votes): string {
+  const parts = CELLS.filter(({ letter }) => votes[letter] > 0).map(({ letter }) => `${votes[letter]} ${letter}`)
+  if (votes.U) parts.push(`${votes.U} cannot judge`)
+  return parts.length ? `Grades: ${parts.join(', ')}` : 'No grades yet'
+}
+
+export function VoteStrip({ votes }: { votes: Votes }) {
+  return (
+    <div role="img" aria-label={describeVotes(votes)} className="flex items-center gap-1.5">
+      <div className="grid min-w-44 flex-1 grid-cols-4 gap-0.5">
+        {CELLS.map(({ letter, dot, cell }) => (
+          <div key={letter} className={`flex h-[1.375rem] items-center gap-1 px-1 ${cell}`}>
+            <span className="w-2.5 text-[0.6875rem] leading-none text-mute">{letter}</span>
+            <span className="flex flex-1 items-center justify-center gap-0.5">
+              {votes[letter] > MOST_DOTS ? (
+                <span className="figures text-note leading-none">{votes[letter]}</span>
+              ) : (
+                Array.from({ length: votes[letter] }, (_, index) => (
+                  <i key={index} className={`size-2 rounded-full ring-1 ring-edge/70 ${dot}`} />
+                ))
+              )}
+            </span>
+          </div>
+        ))}
+      </div>
+      {votes.U ? <span className="figures text-note text-mute">+{votes.U}?</span> : null}
+    </div>
+  )
+}

@@ -1,0 +1,171 @@
+import type { Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { Campaign, MeanParameters, RecipeRow, Rule } from '../schema/campaigns'
+import type { Role } from '../schema/people'
+import { toJson } from '../schema/values'
+
+export async function insertCampaign(
+  db: Kysely<DB>,
+  campaign: {
+    slug: string
+    name: string
+    survey: string
+    acronym: string
+    bands: string[]
+    namePattern: string | null
+    createdBy: number
+    now: string
+  },
+): Promise<Campaign> {
+  return db
+    .insertInto('campaign')
+    .values({
+      slug: campaign.slug,
+      name: campaign.name,
+      survey: campaign.survey,
+      acronym: campaign.acronym,
+      bands: toJson(campaign.bands),
+      name_pattern: campaign.namePattern,
+      created_by: campaign.createdBy,
+      created_at: campaign.now,
+    })
+    .returningAll()
+    .executeTakeFirstOrThrow()
+}
+
+export async function isSlugTaken(db: Kysely<DB>, slug: string): Promise<boolean> {
+  return (await db.selectFrom('campaign').select('id').where('slug', '=', slug).executeTakeFirst()) !== undefined
+}
+
+export interface CampaignSummary {
+  id: number
+  slug: string
+  name: string
+  survey: string
+  acronym: string
+  role: Role
+  candidates: number
+  confirmed: number
+  split: number
+}
+
+/** The campaigns that a person is in, newest first. Calibration candidates are not counted. */
+export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<CampaignSummary[]> {
+  return db
+    .selectFrom('membership')
+    .innerJoin('campaign', 'campaign.id', 'membership.campaign_id')
+    .leftJoin('candidate', (join) =>
+      join.onRef('candidate.campaign_id', '=', 'campaign.id').on('candidate.truth', 'is', null),
+    )
+    .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
+    .select((e) => [
+      e.fn.count<number>('candidate.id').as('candidates'),
+      e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'confirmed').as('confirmed'),
+      e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'split').as('split'),
+    ])
+    .where('membership.person_id', '=', personId)
+    .where('membership.ended_at', 'is', null)
+    .groupBy('membership.id')
+    .orderBy('campaign.id', 'desc')
+    .execute()
+}
+
+/** The version that is in force. A campaign is made with its first, so there always is one. */
+export async function requireRule(db: Kysely<DB>, campaignId: number): Promise<Rule> {
+  return db
+    .selectFrom('rule')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .orderBy('version', 'desc')
+    .limit(1)
+    .executeTakeFirstOrThrow()
+}
+
+export async function listRules(db: Kysely<DB>, campaignId: number): Promise<Rule[]> {
+  return db.selectFrom('rule').selectAll().where('campaign_id', '=', campaignId).orderBy('version', 'desc').execute()
+}
+
+export async function insertRule(
+  db: Kysely<DB>,
+  rule: {
+    campaignId: number
+    version: number
+    gradesWanted: number
+    leastGrades: number
+    parameters: MeanParameters
+    createdBy: number
+    now: string
+  },
+): Promise<number> {
+  const row = await db
+    .insertInto('rule')
+    .values({
+      campaign_id: rule.campaignId,
+      version: rule.version,
+      method: 'mean',
+      grades_wanted: rule.gradesWanted,
+      least_grades: rule.leastGrades,
+      parameters: toJson(rule.parameters),
+      created_by: rule.createdBy,
+      created_at: rule.now,
+    })
+    .returning('id')
+    .executeTakeFirstOrThrow()
+  return row.id
+}
+
+/** The recipe in force, by which new stamps are made. */
+export async function requireRecipe(db: Kysely<DB>, campaignId: number): Promise<RecipeRow> {
+  return db
+    .selectFrom('recipe')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .orderBy('version', 'desc')
+    .limit(1)
+    .executeTakeFirstOrThrow()
+}
+
+export async function insertRecipe(
+  db: Kysely<DB>,
+  recipe: { campaignId: number; version: number; parameters: string; hash: string; createdBy: number; now: string },
+): Promise<number> {
+  const row = await db
+    .insertInto('recipe')
+    .values({
+      campaign_id: recipe.campaignId,
+      version: recipe.version,
+      parameters: recipe.parameters,
+      hash: recipe.hash,
+      created_by: recipe.createdBy,
+      created_at: recipe.now,
+    })
+    .returning('id')
+    .executeTakeFirstOrThrow()
+  return row.id
+}
+
+export interface CampaignCounts {
+  candidates: number
+  imaged: number
+  open: number
+  split: number
+  confirmed: number
+  setAside: number
+}
+
+/** Without calibration candidates. */
+export async function countCandidates(db: Kysely<DB>, campaignId: number): Promise<CampaignCounts> {
+  return db
+    .selectFrom('candidate')
+    .select((e) => [
+      e.fn.countAll<number>().as('candidates'),
+      e.fn.count<number>('imaged_at').as('imaged'),
+      e.fn.countAll<number>().filterWhere('state', '=', 'open').as('open'),
+      e.fn.countAll<number>().filterWhere('state', '=', 'split').as('split'),
+      e.fn.countAll<number>().filterWhere('state', '=', 'confirmed').as('confirmed'),
+      e.fn.countAll<number>().filterWhere('state', '=', 'set aside').as('setAside'),
+    ])
+    .where('campaign_id', '=', campaignId)
+    .where('truth', 'is', null)
+    .executeTakeFirstOrThrow()
+}
