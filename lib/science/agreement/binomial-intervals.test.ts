@@ -1,5 +1,5 @@
+import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
-import reference from '@/fixtures/agreement/binomial-intervals.json'
 import {
   clopperPearsonInterval,
   jeffreysInterval,
@@ -7,6 +7,10 @@ import {
   wilsonInterval,
 } from '@/lib/science/agreement/binomial-intervals'
 import { normalQuantile } from '@/lib/science/agreement/quantiles'
+
+const reference = JSON.parse(
+  readFileSync('fixtures/agreement/binomial-intervals.json', 'utf8'),
+) as typeof import('@/fixtures/agreement/binomial-intervals.json')
 
 const METHODS = {
   wilson: wilsonInterval,

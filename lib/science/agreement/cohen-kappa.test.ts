@@ -1,8 +1,13 @@
 import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
-import panel from '@/fixtures/agreement/panel.json'
-import reference from '@/fixtures/agreement/cohen-kappa.json'
 import { cohenKappa, contingencyTable, type KappaWeights } from '@/lib/science/agreement/cohen-kappa'
+
+const panel = JSON.parse(
+  readFileSync('fixtures/agreement/panel.json', 'utf8'),
+) as typeof import('@/fixtures/agreement/panel.json')
+const reference = JSON.parse(
+  readFileSync('fixtures/agreement/cohen-kappa.json', 'utf8'),
+) as typeof import('@/fixtures/agreement/cohen-kappa.json')
 
 const NAMED = ['unweighted', 'linear', 'quadratic'] as const
 

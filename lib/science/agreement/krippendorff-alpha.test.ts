@@ -1,13 +1,18 @@
 import { readFileSync } from 'node:fs'
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import panel from '@/fixtures/agreement/panel.json'
-import reference from '@/fixtures/agreement/krippendorff-2011.json'
 import {
   krippendorffAlpha,
   krippendorffAlphaFromCounts,
   type AlphaMetric,
 } from '@/lib/science/agreement/krippendorff-alpha'
+
+const panel = JSON.parse(
+  readFileSync('fixtures/agreement/panel.json', 'utf8'),
+) as typeof import('@/fixtures/agreement/panel.json')
+const reference = JSON.parse(
+  readFileSync('fixtures/agreement/krippendorff-2011.json', 'utf8'),
+) as typeof import('@/fixtures/agreement/krippendorff-2011.json')
 
 const METRICS: AlphaMetric[] = ['nominal', 'ordinal', 'interval']
 type Ratings = (number | null)[][]

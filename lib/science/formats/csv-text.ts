@@ -2,9 +2,6 @@
 
 const DELIMITERS = [',', ';', '\t']
 
-/** A quoted field, which is kept as it is, or a line end that is not a plain LF. */
-const QUOTED_OR_LINE_END = /"(?:[^"]|"")*"|\r\n?/g
-
 export interface CsvProblem {
   /** line in the file, from 1, where the record begins; null for the file as a whole */
   line: number | null
@@ -58,15 +55,39 @@ function decode(bytes: Uint8Array): string {
 
 /** The delimiter most frequent in the first line that is not blank, outside quotes; a comma when there is none. */
 export function delimiterOf(text: string): string {
-  const header = /^\s*?([^\r\n]*\S[^\r\n]*)/.exec(text)?.[1] ?? ''
-  const unquoted = header.replace(/"(?:[^"]|"")*"/g, '')
-  const frequency = (delimiter: string) => unquoted.split(delimiter).length
+  const header = text.trimStart().split(/[\r\n]/, 1)[0]
+  const unquoted = header.split('"').filter((_, part) => part % 2 === 0)
+  const frequency = (delimiter: string) => unquoted.reduce((sum, part) => sum + part.split(delimiter).length - 1, 0)
   return DELIMITERS.reduce((best, next) => (frequency(next) > frequency(best) ? next : best))
 }
 
-/** The same text with CR LF and CR outside quotes as LF, so that a file may mix its line ends. */
-export function withPlainLineEnds(text: string): string {
-  return text.replace(QUOTED_OR_LINE_END, (match) => (match.startsWith('"') ? match : '\n'))
+/**
+ * The same text with CR LF and CR as LF, so that a file may mix its line ends; quoted fields, which open only at the
+ * beginning of a field, are kept as they are. Linear in the length of the text.
+ */
+export function withPlainLineEnds(text: string, delimiter: string): string {
+  const fieldEnd = new RegExp(`${delimiter}|\r\n|\r|\n`, 'g')
+  const parts: string[] = []
+  let position = 0
+  while (position < text.length) {
+    const afterQuotes = text[position] === '"' ? endOfQuotes(text, position) : position
+    fieldEnd.lastIndex = afterQuotes
+    const end = fieldEnd.exec(text)
+    if (!end) {
+      parts.push(text.slice(position))
+      break
+    }
+    parts.push(text.slice(position, end.index), end[0] === delimiter ? delimiter : '\n')
+    position = end.index + end[0].length
+  }
+  return parts.join('')
+}
+
+/** The place after the quote that closes the one at `open`; the end of the text when none does. */
+function endOfQuotes(text: string, open: number): number {
+  let close = text.indexOf('"', open + 1)
+  while (close >= 0 && text[close + 1] === '"') close = text.indexOf('"', close + 2)
+  return close < 0 ? text.length : close + 1
 }
 
 /** Line breaks of any kind, CR LF counted once. */

@@ -75,7 +75,7 @@ interface CsvRecord {
 function readWhole(parts: readonly (string | Uint8Array)[]): CsvTable {
   const { text, firstLine, problems } = csvText(parts)
   const delimiter = delimiterOf(text)
-  const [head, ...records] = recordsOf(withPlainLineEnds(text), firstLine, delimiter)
+  const [head, ...records] = recordsOf(withPlainLineEnds(text, delimiter), firstLine, delimiter)
   if (!head) {
     problems.push({ line: null, message: 'The file is empty: it needs a header line with the names of its columns.' })
     return { header: [], delimiter, rows: [], problems }

@@ -34,7 +34,7 @@ export function cellText(column: Typed, value: CellValue, where: string): string
     const text = String(value)
     return /[^\t\n\r\x20-\x7e]/.test(text) ? refuse('char holds ASCII only; declare the column unicodeChar') : text
   }
-  if (datatype === 'boolean') return typeof value === 'boolean' ? String(value) : refuse(`${value} is not a boolean`)
+  if (datatype === 'boolean') return typeof value === 'boolean' ? String(value) : refuse(`'${value}' is not a boolean`)
   if (typeof value !== 'number') return refuse(`'${value}' is not a number`)
   const limit = INTEGER_LIMIT[datatype]
   if (limit !== undefined) {
