@@ -1,59 +1,113 @@
+/**
+ * One simulated candidate: a lens or one of the things that are taken for lenses, as a survey would record it. The same
+ * kind, seed and survey give the same pixels (on one JavaScript engine).
+ */
+import { SeededRandom } from './seeded-random'
+import { composeSatelliteTrail, composeStarSpikes, type Artefact } from './simulator/artefact-scenes'
+import { arcDifficulty, impostorDifficulty } from './simulator/difficulty'
+import { addFieldGalaxies } from './simulator/field-galaxies'
+import {
+  composeEdgeOn,
+  composeElliptical,
+  composeMerger,
+  composeRingGalaxy,
+  composeSpiral,
+} from './simulator/galaxy-scenes'
+import { composeLens, type LensKind } from './simulator/lens-scenes'
+import { addPoints, blurredScene, recordCutout } from './simulator/observe-scene'
+import { Scene } from './simulator/scene'
 import { SALTMARSH_WIDE_SURVEY, type SurveyModel } from './survey-model'
 
 export type { SurveyModel } from './survey-model'
 
-export type SimulatedKind =
-  | 'lens-arc'
-  | 'lens-ring'
-  | 'lens-quad'
-  | 'lens-double'
-  | 'lens-group'
-  | 'spiral'
-  | 'ring-galaxy'
-  | 'merger'
-  | 'edge-on'
-  | 'star-spikes'
-  | 'satellite-trail'
-  | 'elliptical'
+export type ImpostorKind =
+  'spiral' | 'ring-galaxy' | 'merger' | 'edge-on' | 'star-spikes' | 'satellite-trail' | 'elliptical'
+
+export type SimulatedKind = LensKind | ImpostorKind
+
+export const SIMULATED_KINDS: readonly SimulatedKind[] = [
+  'lens-arc',
+  'lens-ring',
+  'lens-quad',
+  'lens-double',
+  'lens-group',
+  'spiral',
+  'ring-galaxy',
+  'merger',
+  'edge-on',
+  'star-spikes',
+  'satellite-trail',
+  'elliptical',
+]
 
 export interface SimulatedCandidate {
   kind: SimulatedKind
   isLens: boolean
-  /** Shortest wavelength first; row 0 is the bottom row. */
+  /** Shortest wavelength first; row 0 is the bottom row; flux units of the survey's zero point, sky subtracted. */
   bands: { band: string; data: Float32Array }[]
   width: number
   height: number
   pixelScaleArcsec: number
-  /** Null for what is not a lens. */
+  /** Of the main lens, circularised; null for what is not a lens. */
   einsteinRadiusArcsec: number | null
-  /** 0 easy to 1 hard. */
+  /**
+   * 0 easy to 1 hard. For a lens by the signal-to-noise of the lensed light against the lens galaxy's; for anything else
+   * by how often its kind is taken for a lens (our own guess, no source).
+   */
   difficulty: number
 }
 
+/** @param seed whole number. */
 export function simulateCandidate(
   kind: SimulatedKind,
   seed: number,
   survey: SurveyModel = SALTMARSH_WIDE_SURVEY,
 ): SimulatedCandidate {
-  const { width, height, pixelScaleArcsec } = survey
-  const isLens = kind.startsWith('lens-')
-  const bands = survey.bands.map(({ band, skyNoise }) => {
-    const data = new Float32Array(width * height)
-    for (let i = 0; i < data.length; i++) {
-      const dx = (i % width) - width / 2
-      const dy = Math.floor(i / width) - height / 2
-      data[i] = 200 * Math.exp(-(dx * dx + dy * dy) / 50) + skyNoise * Math.sin((i + 1) * (seed + 1) * 12.9898)
-    }
-    return { band, data }
+  const random = new SeededRandom(seed * SIMULATED_KINDS.length + SIMULATED_KINDS.indexOf(kind))
+  const scene = new Scene(survey)
+  const composed = compose(kind, scene, random)
+  addFieldGalaxies(scene, kind === 'lens-group' ? 2 : 3.2, random)
+  const bands = survey.bands.map((band, index) => {
+    const canvas = blurredScene(scene, index, () => true)
+    addPoints(canvas, scene, index)
+    composed.artefact?.(canvas, index)
+    return { band: band.band, data: recordCutout(canvas, scene, band, random) }
   })
-  return {
-    kind,
-    isLens,
-    bands,
-    width,
-    height,
-    pixelScaleArcsec,
-    einsteinRadiusArcsec: isLens ? 1.5 : null,
-    difficulty: 0.5,
+  const { width, height, pixelScaleArcsec } = survey
+  const { einsteinRadiusArcsec } = composed
+  const isLens = einsteinRadiusArcsec !== null
+  const difficulty = isLens ? arcDifficulty(scene) : impostorDifficulty(kind as ImpostorKind, random)
+  return { kind, isLens, bands, width, height, pixelScaleArcsec, einsteinRadiusArcsec, difficulty }
+}
+
+interface Composed {
+  einsteinRadiusArcsec: number | null
+  artefact: Artefact | null
+}
+
+function compose(kind: SimulatedKind, scene: Scene, random: SeededRandom): Composed {
+  const none = { einsteinRadiusArcsec: null, artefact: null }
+  switch (kind) {
+    case 'spiral':
+      composeSpiral(scene, random)
+      return none
+    case 'ring-galaxy':
+      composeRingGalaxy(scene, random)
+      return none
+    case 'merger':
+      composeMerger(scene, random)
+      return none
+    case 'edge-on':
+      composeEdgeOn(scene, random)
+      return none
+    case 'elliptical':
+      composeElliptical(scene, random)
+      return none
+    case 'star-spikes':
+      return { ...none, artefact: composeStarSpikes(scene, random) }
+    case 'satellite-trail':
+      return { ...none, artefact: composeSatelliteTrail(scene, random) }
+    default:
+      return { ...none, einsteinRadiusArcsec: composeLens(kind, scene, random) }
   }
 }
