@@ -1,7 +1,10 @@
 import { defineConfig } from 'vitest/config'
 
 export default defineConfig({
-  resolve: { tsconfigPaths: true, alias: { 'server-only': new URL('./tests/_server-only.ts', import.meta.url).pathname } },
+  resolve: {
+    tsconfigPaths: true,
+    alias: { 'server-only': new URL('./tests/_server-only.ts', import.meta.url).pathname },
+  },
   test: {
     projects: [
       {
