@@ -1,0 +1,24 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { listCandidatesAmong, listJudgedAmong } from '@/db/queries/grading'
+import type { DB } from '@/db/schema'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+
+/**
+ * Of which of these candidates the person may see grades, verdict and state. Leads and viewers: of all in the campaign. A
+ * grader: of those they have judged themselves, so that nobody is swayed. 'Cannot judge' is no judgement: it reveals nothing,
+ * or a look at the others' grades would cost one key. Ids of other campaigns are never in the answer.
+ */
+export async function revealedTo(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateIds: readonly number[],
+): Promise<Set<number>> {
+  if (candidateIds.length === 0) return new Set()
+  const { campaign, viewer, role } = permit
+  return new Set(
+    role === 'grader'
+      ? await listJudgedAmong(db, campaign.id, viewer.id, candidateIds)
+      : await listCandidatesAmong(db, campaign.id, candidateIds),
+  )
+}
