@@ -1,5 +1,5 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
+import { readFixture } from '@/lib/science/agreement/_fixtures'
 import {
   clopperPearsonInterval,
   jeffreysInterval,
@@ -8,9 +8,7 @@ import {
 } from '@/lib/science/agreement/binomial-intervals'
 import { normalQuantile } from '@/lib/science/agreement/quantiles'
 
-const reference = JSON.parse(
-  readFileSync('fixtures/agreement/binomial-intervals.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/binomial-intervals.json')
+const reference = readFixture('binomial-intervals.json')
 
 const METHODS = {
   wilson: wilsonInterval,

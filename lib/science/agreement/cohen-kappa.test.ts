@@ -1,13 +1,9 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
+import { readFixture, readPanel } from '@/lib/science/agreement/_fixtures'
 import { cohenKappa, contingencyTable, type KappaWeights } from '@/lib/science/agreement/cohen-kappa'
 
-const panel = JSON.parse(
-  readFileSync('fixtures/agreement/panel.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/panel.json')
-const reference = JSON.parse(
-  readFileSync('fixtures/agreement/cohen-kappa.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/cohen-kappa.json')
+const panel = readFixture('panel.json')
+const reference = readFixture('cohen-kappa.json')
 
 const NAMED = ['unweighted', 'linear', 'quadratic'] as const
 
@@ -41,14 +37,8 @@ describe('cohenKappa', () => {
 
   // scikit-learn 1.2.1 cohen_kappa_score on the seeded panel, items that both rated.
   it('equals scikit-learn for every pair of the seeded panel', () => {
-    const rows = readFileSync('fixtures/agreement/panel-ratings.csv', 'utf8')
-      .trim()
-      .split(/\r?\n/)
-      .map((l) => l.split(','))
-    const ratingsOf = (rater: string) => {
-      const column = rows[0].indexOf(rater)
-      return rows.slice(1).map((row) => (row[column] === '' ? null : Number(row[column])))
-    }
+    const { raters, ratings } = readPanel()
+    const ratingsOf = (rater: string) => ratings.map((row) => row[raters.indexOf(rater)])
     expect(panel.pairwise_kappa.pairs).toHaveLength(28)
     for (const expected of panel.pairwise_kappa.pairs) {
       const [first, second] = expected.pair.map(ratingsOf)

@@ -1,13 +1,9 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
+import { readFixture } from '@/lib/science/agreement/_fixtures'
 import { fleissKappa, subjectsRatedBy } from '@/lib/science/agreement/fleiss-kappa'
 
-const gwet = JSON.parse(
-  readFileSync('fixtures/agreement/gwet-missing.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/gwet-missing.json')
-const reference = JSON.parse(
-  readFileSync('fixtures/agreement/fleiss-1971.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/fleiss-1971.json')
+const gwet = readFixture('gwet-missing.json')
+const reference = readFixture('fleiss-1971.json')
 
 describe('fleissKappa', () => {
   // Fleiss (1971), Psychological Bulletin 76, 378, Table 1: kappa 0.430; exactly 5437/12637.

@@ -1,10 +1,8 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
+import { readFixture } from '@/lib/science/agreement/_fixtures'
 import { GRADE_POINTS, gradesAmong, meanAndSpread } from '@/lib/science/agreement/grades'
 
-const reference = JSON.parse(
-  readFileSync('fixtures/agreement/vote-vectors.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/vote-vectors.json')
+const reference = readFixture('vote-vectors.json')
 
 describe('grade points', () => {
   it('give a sure lens three points and not a lens none, and cannot judge no number at all', () => {

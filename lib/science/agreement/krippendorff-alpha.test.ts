@@ -1,18 +1,14 @@
-import { readFileSync } from 'node:fs'
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
+import { readFixture, readPanel } from '@/lib/science/agreement/_fixtures'
 import {
   krippendorffAlpha,
   krippendorffAlphaFromCounts,
   type AlphaMetric,
 } from '@/lib/science/agreement/krippendorff-alpha'
 
-const panel = JSON.parse(
-  readFileSync('fixtures/agreement/panel.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/panel.json')
-const reference = JSON.parse(
-  readFileSync('fixtures/agreement/krippendorff-2011.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/krippendorff-2011.json')
+const panel = readFixture('panel.json')
+const reference = readFixture('krippendorff-2011.json')
 
 const METRICS: AlphaMetric[] = ['nominal', 'ordinal', 'interval']
 type Ratings = (number | null)[][]
@@ -61,13 +57,7 @@ describe('krippendorffAlpha', () => {
 
   // Panel made by numpy's seeded generator; alpha by exact fractions, R irr and the Python package krippendorff.
   it.each(METRICS)('equals the reference libraries on the seeded panel: %s', (metric) => {
-    const lines = readFileSync('fixtures/agreement/panel-ratings.csv', 'utf8').trim().split(/\r?\n/).slice(1)
-    const units = lines.map((line) =>
-      line
-        .split(',')
-        .slice(1)
-        .map((cell) => (cell === '' ? null : Number(cell))),
-    )
+    const units = readPanel().ratings
     const expected = panel.krippendorff_alpha
     expect(krippendorffAlpha(units, metric).alpha).toBeCloseTo(expected[metric], 9)
     expect(krippendorffAlpha(units, metric).pairableValues).toBe(expected.pairable)

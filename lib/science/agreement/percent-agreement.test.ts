@@ -1,10 +1,8 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
+import { readFixture } from '@/lib/science/agreement/_fixtures'
 import { percentAgreement } from '@/lib/science/agreement/percent-agreement'
 
-const gwet = JSON.parse(
-  readFileSync('fixtures/agreement/gwet-missing.json', 'utf8'),
-) as typeof import('@/fixtures/agreement/gwet-missing.json')
+const gwet = readFixture('gwet-missing.json')
 
 describe('percentAgreement', () => {
   // Gwet (2021), Handbook of Inter-Rater Reliability, 5th ed., p. 160 and p. 165; the first also printed by R irrCAC.
