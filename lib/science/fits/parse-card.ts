@@ -44,7 +44,7 @@ function parseValue(field: string): { value: FitsValue | undefined; valid: boole
 /** Two quotes in a row stand for one; trailing blanks do not count, leading ones do (section 4.2.1.1). */
 function parseQuoted(field: string, start: number): { value: string; valid: boolean } {
   let text = ''
-  for (let from = start + 1; ; ) {
+  for (let from = start + 1; ;) {
     const quote = field.indexOf("'", from)
     if (quote < 0) return { value: (text + field.slice(from)).trimEnd(), valid: false }
     text += field.slice(from, quote)

@@ -35,7 +35,10 @@ export function readHeader(bytes: Uint8Array, start: number, hdu: number): Heade
     open = null
     if (value === undefined || keyword in header) continue
     if (!valid && STRUCTURAL.test(keyword)) {
-      throw new FitsError('bad-header', `The header of HDU ${hdu} has ${keyword} = ${value}, which is not a FITS value.`)
+      throw new FitsError(
+        'bad-header',
+        `The header of HDU ${hdu} has ${keyword} = ${value}, which is not a FITS value.`,
+      )
     }
     header[keyword] = value
     if (typeof value === 'string' && value.endsWith('&')) open = keyword
