@@ -19,6 +19,10 @@ describe('csvLine', () => {
     expect(csvLine([' a', 'b ', '\tc'])).toBe('" a","b ","\tc"\r\n')
   })
 
+  it('quotes text with what Unicode takes for a line end', () => {
+    expect(csvLine(['a\u2028b', 'c\u0085d', 'e\vf'])).toBe('"a\u2028b","c\u0085d","e\vf"\r\n')
+  })
+
   it('keeps a leading = as it is', () => {
     expect(csvLine(['=SUM(A1:A9)', '+1', '@x'])).toBe('=SUM(A1:A9),+1,@x\r\n')
   })

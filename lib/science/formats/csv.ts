@@ -9,7 +9,11 @@ import {
   type CsvProblem,
 } from '@/lib/science/formats/csv-text'
 
-const MUST_QUOTE = /[",\r\n]|^\s|\s$/
+/**
+ * What RFC 4180 makes us quote, and beyond it: blanks at the ends, which some readers cut off, and the other characters that
+ * Unicode takes for line ends, at which readers that cut a file into lines first (astropy) would break a bare field.
+ */
+const MUST_QUOTE = /[",\r\n\v\f\x1c-\x1e\x85\u2028\u2029]|^\s|\s$/
 
 /**
  * One record of RFC 4180 with its CR LF.
