@@ -1,0 +1,71 @@
+import { createHash } from 'node:crypto'
+import { mkdtemp, readdir, rm } from 'node:fs/promises'
+import { tmpdir } from 'node:os'
+import path from 'node:path'
+import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { BlobStore } from './blob-store'
+
+let folder: string
+let store: BlobStore
+
+beforeEach(async () => {
+  folder = await mkdtemp(path.join(tmpdir(), 'ringside-blobs-'))
+  store = new BlobStore(path.join(folder, 'blobs'), path.join(folder, 'incoming'))
+})
+afterEach(() => rm(folder, { recursive: true, force: true }))
+
+async function* chunks(...parts: string[]): AsyncGenerator<Uint8Array> {
+  for (const part of parts) yield new TextEncoder().encode(part)
+}
+
+const leftovers = () => readdir(path.join(folder, 'incoming')).catch(() => [])
+
+describe('BlobStore', () => {
+  it('names bytes by their SHA-256 and gives them back', async () => {
+    const blob = await store.put(new TextEncoder().encode('abc'))
+    // FIPS 180-4, the 'abc' example of SHA-256.
+    expect(blob.sha256).toBe('ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad')
+    expect(blob.bytes).toBe(3)
+    expect(Buffer.from(await store.read(blob.sha256)).toString()).toBe('abc')
+    expect(await store.has(blob.sha256)).toBe(true)
+  })
+
+  it('gives a stream and a buffer of the same bytes the same name, and keeps one', async () => {
+    const streamed = await store.putStream(chunks('a', 'b', 'c'))
+    expect(await store.put(new TextEncoder().encode('abc'))).toEqual(streamed)
+    expect(await leftovers()).toEqual([])
+  })
+
+  it('keeps nothing of a stream that breaks, so that half a file can never be taken for a whole one', async () => {
+    async function* broken(): AsyncGenerator<Uint8Array> {
+      yield new TextEncoder().encode('half')
+      throw new Error('connection lost')
+    }
+    await expect(store.putStream(broken())).rejects.toThrow('connection lost')
+    expect(await leftovers()).toEqual([])
+    expect(await store.has(createHash('sha256').update('half').digest('hex'))).toBe(false)
+  })
+
+  it('keeps nothing of a stream that its reader refuses, and stops reading it', async () => {
+    let read = 0
+    async function* endless(): AsyncGenerator<Uint8Array> {
+      for (;;) {
+        read++
+        yield new Uint8Array(1000)
+      }
+    }
+    const tooMuch = store.putStream(endless(), (total) => {
+      if (total > 5000) throw new RangeError('too much')
+    })
+    await expect(tooMuch).rejects.toThrow('too much')
+    expect(read).toBe(6)
+    expect(await leftovers()).toEqual([])
+  })
+
+  it.each(['../../etc/passwd', 'abc', ''])(
+    'refuses %j as a name, so that no name reaches outside its folder',
+    (name) => {
+      expect(() => store.pathOf(name)).toThrow('Not a SHA-256 name')
+    },
+  )
+})
