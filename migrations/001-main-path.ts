@@ -155,7 +155,9 @@ const STATEMENTS = [
     created_at text not null,
     unique (campaign_id, name),
     check (ra_deg is null or (ra_deg >= 0 and ra_deg < 360)),
-    check (dec_deg is null or (dec_deg >= -90 and dec_deg <= 90))
+    check (dec_deg is null or (dec_deg >= -90 and dec_deg <= 90)),
+    -- A calibration candidate is never decided: it has a truth already.
+    check (truth is null or state = 'open')
   ) strict`,
   `create index candidate_dec on candidate (campaign_id, dec_deg)`,
   `create index candidate_state on candidate (campaign_id, state, id)`,
@@ -223,6 +225,7 @@ const STATEMENTS = [
     occasion text not null check (occasion in ('first', 'repeat', 'asked')),
     grade text not null check (grade in ('A', 'B', 'C', 'N', 'U')),
     tags text not null default '[]' check (json_valid(tags)),
+    reason text,
     remark text,
     recipe_id integer references recipe (id),
     view text,
@@ -244,6 +247,8 @@ const STATEMENTS = [
     campaign_id integer not null references campaign (id),
     rule_id integer not null references rule (id),
     input_digest text not null,
+    newest_grade_id integer not null,
+    newest_candidate_id integer not null,
     summary text not null check (json_valid(summary)),
     started_by integer references person (id),
     created_at text not null
@@ -294,6 +299,11 @@ const STATEMENTS = [
     at text not null
   ) strict`,
   `create index entry_candidate on entry (candidate_id, id)`,
+  ...['entry', 'designation', 'ruling', 'verdict'].map(
+    (table) => `create trigger ${table}_not_calibration before insert on ${table}
+      when exists (select 1 from candidate where id = new.candidate_id and truth is not null)
+      begin select raise(abort, 'a calibration candidate is never decided and never in the catalogue'); end`,
+  ),
 
   `create table job (
     id integer primary key,

@@ -2,14 +2,18 @@ import type { Generated, Selectable } from 'kysely'
 import type { CandidateState, StateCause } from './intake'
 import type { IsoTime, Json } from './values'
 
+/** Calibration candidates are in none of these numbers. States are those of the verdicts, before any ruling. */
 export interface RunSummary {
   candidates: number
+  /** Answers that are grades; 'cannot judge' is not one. */
   grades: number
+  cannotJudge: number
   graders: number
   open: number
   split: number
   confirmed: number
   setAside: number
+  /** Verdicts that differ from the candidate's verdict before. */
   changed: number
   alphaOrdinal: number | null
   alphaNote: string | null
@@ -23,6 +27,9 @@ export interface RunTable {
   rule_id: number
   /** SHA-256 over the rule and every standing grade, in a fixed order. */
   input_digest: string
+  /** What the run read: grades and candidates up to these rows. With the rule they are its whole input. */
+  newest_grade_id: number
+  newest_candidate_id: number
   summary: Json<RunSummary>
   /** null when it started by itself. */
   started_by: number | null
