@@ -22,6 +22,8 @@ export interface GradeTable {
   /** U is 'cannot judge'. */
   grade: GradeLetter
   tags: Json<string[]>
+  /** Why it cannot be judged; only with U. */
+  reason: string | null
   remark: string | null
   recipe_id: number | null
   view: string | null
