@@ -77,7 +77,9 @@ function installTools() {
   }
   const still = TOOLS.filter(([, present]) => !present()).map(([name]) => name)
   if (still.length) {
-    console.log(`MISSING: ${still.join(', ')}. Tests that need them will fail; as root: apt-get install ${still.join(' ')}`)
+    console.log(
+      `MISSING: ${still.join(', ')}. Tests that need them will fail; as root: apt-get install ${still.join(' ')}`,
+    )
   }
 }
 
