@@ -21,6 +21,8 @@ export interface Noise {
 const BINS = 1024
 const REACH_SIGMA = 8
 const SAMPLES = 512
+/** Standard deviation of a normal distribution of unit width cut at 3 sigma. */
+const CUT_SPREAD = 0.98658
 /** Radius of the disc left out, as a share of the shorter side. */
 const CENTRE_SHARE = 0.3
 
@@ -28,7 +30,8 @@ const histogram = new Uint32Array(BINS)
 
 /**
  * @param plane width x height pixels, row by row; pixels that are not finite do not count.
- * Never throws. Accuracy on 80 x 80 pixels: about 0.05 sigma in level, 3 % in noise, with a galaxy over a third of them.
+ * Never throws. Measured on 80 x 80 simulated pixels: noise within 3 %; level within 0.05 sigma, and 0.2 sigma high where a
+ * galaxy's wings reach the edge.
  */
 export function estimateNoise(plane: Float32Array, width: number, height: number): Noise {
   const values = new Float32Array(plane.length)
@@ -114,7 +117,7 @@ function refine(values: Float32Array, count: number, guess: number, guessSigma: 
     const to = Math.min(BINS, Math.round(background + 3 * sigma))
     const { mean, median } = histogramCentre(from, to)
     const mode = Math.abs(mean - median) < 0.3 * sigma ? 2.5 * median - 1.5 * mean : median
-    const lower = lowerSpread(from, mode)
+    const lower = lowerSpread(from, mode) / CUT_SPREAD
     const settled = Math.abs(lower - sigma) < 0.002 * sigma && Math.abs(mode - background) < 0.002 * sigma
     if (lower > 0) sigma = lower
     background = mode

@@ -15,6 +15,8 @@ export interface NormalisedPlane {
   height: number
   /** (pixel - sky) / noise, rows as given; NaN where the pixel is not finite. */
   values: Float32Array
+  /** Standard deviation of the sky in the plane's own unit; 0 when the plane is not usable. */
+  sigma: number
   /** Pixels that are not finite. */
   missing: number
   /** 'empty': no finite pixel. 'constant': all finite pixels equal, so there is nothing to see. */
@@ -39,5 +41,5 @@ export function normalisePlane({ band, width, height, data }: BandPlane): Normal
     }
   }
   const state = finiteFraction === 0 ? 'empty' : sigma > 0 ? 'usable' : 'constant'
-  return { band, width, height, values, missing, state }
+  return { band, width, height, values, sigma, missing, state }
 }

@@ -2,7 +2,7 @@
  * The colour view: Lupton composite of noise-normalised planes. Where the light is weaker than the noise its hue is
  * nothing but noise, so there colour is taken from smoothed channels and fades to grey; brightness stays native.
  */
-import { channelWeights, mixPlanes } from './colour-channels'
+import { channelWeights, colourBalance, mixPlanes } from './colour-channels'
 import { luptonFromLimits, luptonRgb } from './lupton'
 import type { NormalisedPlane } from './normalise-planes'
 import type { Recipe } from './recipe'
@@ -14,7 +14,8 @@ import { whiteLevel } from './white-level'
 export function renderColour(planes: NormalisedPlane[], recipe: Recipe): Uint8Array {
   const { width, height } = planes[0]
   const limits = recipe.colour
-  const bandWeights = planes.map((plane) => recipe.weights?.[plane.band] ?? 1)
+  const balance = colourBalance(planes.map((plane) => plane.sigma))
+  const bandWeights = planes.map((plane, k) => (recipe.weights?.[plane.band] ?? 1) * balance[k])
   const [red, green, blue] = channelWeights(planes.length).map((shares) =>
     mixPlanes(
       planes,

@@ -15,23 +15,30 @@ export function renderDeep(planes: NormalisedPlane[], limits: DeepLimits): Uint8
   const { width, height } = planes[0]
   const combined = combine(planes)
   if (!limits.smooth) return renderGrey(combined, width, height, limits)
-  const filled = combined.map((value) => (value !== value ? 0 : value))
-  const smoothed = smoothBinomial(filled, width, height)
-  for (let i = 0; i < smoothed.length; i++) {
-    if (combined[i] !== combined[i]) smoothed[i] = Number.NaN
-    else smoothed[i] /= SMOOTHED_NOISE
-  }
+  const gaps = fillGaps(combined)
+  const smoothed = smoothBinomial(combined, width, height, 1 / SMOOTHED_NOISE)
+  for (const pixel of gaps) smoothed[pixel] = Number.NaN
   return renderGrey(smoothed, width, height, limits)
+}
+
+/** Puts the sky level where there is no data, and says where that was. In place. */
+function fillGaps(values: Float32Array): number[] {
+  const gaps: number[] = []
+  for (let i = 0; i < values.length; i++) {
+    if (values[i] === values[i]) continue
+    values[i] = 0
+    gaps.push(i)
+  }
+  return gaps
 }
 
 /** Signal-to-noise of the bands together; NaN only where no band has data. */
 export function combine(planes: NormalisedPlane[]): Float32Array {
-  if (planes.length === 1) return planes[0].values
-  const combined = new Float32Array(planes[0].values.length)
+  const combined = planes[0].values.slice()
+  for (const { values } of planes.slice(1)) for (let i = 0; i < combined.length; i++) combined[i] += values[i]
   const whole = 1 / Math.sqrt(planes.length)
   for (let i = 0; i < combined.length; i++) {
-    let sum = 0
-    for (const { values } of planes) sum += values[i]
+    const sum = combined[i]
     combined[i] = sum === sum ? sum * whole : combinePresent(planes, i)
   }
   return combined

@@ -1,6 +1,5 @@
 /** One noise-normalised plane as a grey picture: black and white points, asinh between them (Lupton et al. 1999, AJ 118, 1406). */
 import type { LimitsSigma } from './recipe'
-import { asinhStretch } from './stretches'
 import { whiteLevel } from './white-level'
 
 /** Grey of pixels without data: apart from the sky's near-black and from any galaxy's light, without hue. */
@@ -29,10 +28,18 @@ export function renderGrey(values: Float32Array, width: number, height: number, 
   return pixels
 }
 
-/** The curve is steepest at black, so the table has more entries than the picture has greys by a factor of 16. */
+/**
+ * Greys of the steps, worked out backwards: grey k begins where 255 y = k - 1/2, at x = a sinh((k - 1/2) / 255 asinh(1 / a)).
+ * The curve is steepest at black, so the table has 16 times more entries than the picture has greys.
+ */
 function brightnessTable(softening: number): Uint8Array {
-  const curve = asinhStretch(softening)
   const table = new Uint8Array(STEPS + 1)
-  for (let i = 0; i <= STEPS; i++) table[i] = Math.floor(255 * curve(Math.min(1, (i + 0.5) / STEPS)) + 0.5)
+  const perGrey = Math.asinh(1 / softening) / 255
+  let from = 0
+  for (let grey = 0; grey <= 255; grey++) {
+    const end = grey === 255 ? STEPS + 1 : Math.ceil(softening * Math.sinh((grey + 0.5) * perGrey) * STEPS - 0.5)
+    table.fill(grey, from, end)
+    from = Math.max(from, end)
+  }
   return table
 }

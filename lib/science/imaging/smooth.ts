@@ -1,8 +1,8 @@
 /**
  * Binomial smoothing over 3 by 3 pixels, kernel (1 2 1) x (1 2 1) / 16, edges repeated. Independent noise falls to 3/8 of
- * its size. Missing (NaN) pixels spread to their neighbours, so replace them first.
+ * its size. The result is multiplied by `gain`. Missing (NaN) pixels spread to their neighbours, so replace them first.
  */
-export function smoothBinomial(values: Float32Array, width: number, height: number): Float32Array {
+export function smoothBinomial(values: Float32Array, width: number, height: number, gain = 1): Float32Array {
   const rows = new Float32Array(values.length)
   for (let y = 0; y < height; y++) {
     const start = y * width
@@ -17,13 +17,14 @@ export function smoothBinomial(values: Float32Array, width: number, height: numb
     }
     rows[end] = (before + 3 * here) * 0.25
   }
+  const share = gain / 4
   const smoothed = new Float32Array(values.length)
   for (let y = 0; y < height; y++) {
     const here = y * width
     const above = y > 0 ? here - width : here
     const below = y < height - 1 ? here + width : here
     for (let x = 0; x < width; x++) {
-      smoothed[here + x] = (rows[above + x] + 2 * rows[here + x] + rows[below + x]) * 0.25
+      smoothed[here + x] = (rows[above + x] + 2 * rows[here + x] + rows[below + x]) * share
     }
   }
   return smoothed

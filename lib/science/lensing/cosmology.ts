@@ -58,12 +58,12 @@ const MPC_KM = 3.085677581491367e19
 const GYR_S = 3.15576e16
 const ARCSEC_PER_RADIAN = 206264.80624709636
 
-/** Og h^2 at 1 K: 8 pi G a / (3 c^2 (100 km/s/Mpc)^2) T^4, with a the radiation constant (CODATA 2018). */
-const OMEGA_PHOTON_H2_PER_K4 = 2.4728001e-5 / 2.7255 ** 4
+/** Og h^2 at 1 K: 8 pi G a / (3 c^2 (100 km/s/Mpc)^2), a the radiation density constant (CODATA 2018 G and sigma). */
+const OMEGA_PHOTON_H2_PER_K4 = 4.481620089151489e-7
 
 /** 7/8 (4/11)^(4/3): energy of one species of massless neutrinos over that of the photons. */
 const NEUTRINO_TO_PHOTON = 0.22710731766023898
-/** (4/11)^(1/3) (3.046/3)^(1/4) is inside the species number; the temperature that the mass term uses is astropy's. */
+/** (4/11)^(1/3): temperature of the neutrinos over that of the photons. */
 const NEUTRINO_TO_PHOTON_TEMPERATURE = 0.7137658555036082
 const BOLTZMANN_EV_PER_K = 8.617333262e-5
 

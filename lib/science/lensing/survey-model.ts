@@ -31,9 +31,9 @@ export interface SurveyModel {
 export const SALTMARSH_WIDE_SURVEY: SurveyModel = {
   name: 'Saltmarsh Wide Survey',
   bands: [
-    { band: 'g', seeingArcsec: 0.84, moffatBeta: 3.2, skyNoise: 1.0, electronsPerFlux: 63 },
+    { band: 'g', seeingArcsec: 0.8, moffatBeta: 3.2, skyNoise: 1.0, electronsPerFlux: 63 },
     { band: 'r', seeingArcsec: 0.76, moffatBeta: 3.4, skyNoise: 1.45, electronsPerFlux: 63 },
-    { band: 'i', seeingArcsec: 0.7, moffatBeta: 3.6, skyNoise: 2.1, electronsPerFlux: 63 },
+    { band: 'i', seeingArcsec: 0.72, moffatBeta: 3.6, skyNoise: 2.1, electronsPerFlux: 63 },
   ],
   pixelScaleArcsec: 0.2,
   width: 80,

@@ -99,11 +99,11 @@ export function composeSatelliteTrail(scene: Scene, random: SeededRandom): Artef
   const angle = random.between(0, Math.PI)
   const passing = random.between(-2.8, 2.8)
   const struck = random.integer(0, scene.survey.bands.length - 1)
-  const strength = random.between(8, 45)
+  const strength = random.between(4, 20)
   const twin = random.chance(0.2) ? random.between(1.5, 4) : null
   return (canvas, bandIndex) => {
     const { skyNoise, seeingArcsec } = scene.survey.bands[bandIndex]
-    const peak = strength * skyNoise * (bandIndex === struck ? 1 : 0.03)
+    const peak = strength * skyNoise * (bandIndex === struck ? 1 : 0.12)
     for (let row = 0; row < scene.height; row++) {
       for (let column = 0; column < scene.width; column++) {
         const across = scene.yOf(row) * Math.cos(angle) - scene.xOf(column) * Math.sin(angle) - passing
@@ -116,6 +116,6 @@ export function composeSatelliteTrail(scene: Scene, random: SeededRandom): Artef
 
 /** Across a trail the light has the seeing's width, somewhat more for a satellite out of focus. */
 function trail(across: number, seeingArcsec: number): number {
-  const sigma = (1.2 * seeingArcsec) / 2.3548
+  const sigma = (1.05 * seeingArcsec) / 2.3548
   return Math.exp(-((across / sigma) ** 2) / 2)
 }

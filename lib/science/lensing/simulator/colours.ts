@@ -43,6 +43,7 @@ export function distantBlueColour(random: SeededRandom): Colour {
 }
 
 export const YOUNG_STARS: Colour = { gMinusR: 0.1, rMinusI: 0.0 }
+export const YOUNG_RING: Colour = { gMinusR: 0.25, rMinusI: 0.1 }
 export const YOUNG_DISC: Colour = { gMinusR: 0.4, rMinusI: 0.2 }
 export const OLD_DISC: Colour = { gMinusR: 0.65, rMinusI: 0.35 }
 export const OLD_BULGE: Colour = { gMinusR: 0.95, rMinusI: 0.45 }

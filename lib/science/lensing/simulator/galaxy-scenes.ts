@@ -8,6 +8,7 @@ import {
   OLD_DISC,
   quiescentColour,
   YOUNG_DISC,
+  YOUNG_RING,
   YOUNG_STARS,
   type Colour,
 } from './colours'
@@ -88,7 +89,7 @@ export function composeSpiral(scene: Scene, random: SeededRandom): void {
     (x, y) => Math.exp(-frame(x, y)[0] / scale),
     paint(scene, share(magnitude, 0.5 * (1 - bulgeShare)), OLD_DISC),
   )
-  scene.addScaled(arm, paint(scene, share(magnitude, 0.36 * (1 - bulgeShare)), YOUNG_DISC), {
+  scene.addScaled(arm, paint(scene, share(magnitude, 0.34 * (1 - bulgeShare)), YOUNG_DISC), {
     fine: 3,
     fineRadiusArcsec: 3,
   })
@@ -98,7 +99,7 @@ export function composeSpiral(scene: Scene, random: SeededRandom): void {
       Math.log(r / scale) / pitch + (2 * Math.PI * random.integer(0, arms - 1)) / arms + 0.12 * random.normal()
     return { ...onSky(axisRatio, turn, r, angle), size: random.between(0.08, 0.16), weight: random.between(0.3, 1) }
   })
-  scene.addScaled(blobs(knots), paint(scene, share(magnitude, 0.1 * (1 - bulgeShare)), YOUNG_STARS), {
+  scene.addScaled(blobs(knots), paint(scene, share(magnitude, 0.16 * (1 - bulgeShare)), YOUNG_STARS), {
     fine: 3,
     fineRadiusArcsec: 4,
   })
@@ -106,8 +107,8 @@ export function composeSpiral(scene: Scene, random: SeededRandom): void {
 
 export function composeRingGalaxy(scene: Scene, random: SeededRandom): void {
   const magnitude = random.between(18.0, 20.0)
-  const radius = random.between(1.2, 2.5)
-  const width = random.between(0.14, 0.3)
+  const radius = random.between(1.5, 2.8)
+  const width = random.between(0.12, 0.26)
   const axisRatio = random.between(0.6, 1)
   const turn = random.between(0, 2 * Math.PI)
   const offset = onSky(axisRatio, turn, random.between(0, 0.25) * radius, random.between(0, 2 * Math.PI))
@@ -118,21 +119,21 @@ export function composeRingGalaxy(scene: Scene, random: SeededRandom): void {
     const [r, angle] = frame(x, y)
     return Math.exp(-(((r - radius) / width) ** 2) / 2) * (1 + contrast * Math.cos(angle - bright))
   }
-  const core = quiescentColour(random.between(0.1, 0.3))
-  const coreShare = random.between(0.45, 0.7)
+  const core = quiescentColour(random.between(0.15, 0.38))
+  const coreShare = random.between(0.4, 0.62)
   scene.add(
     bulge(random.between(0.35, 0.7), random.between(2, 4), random.between(0.75, 1)),
     paint(scene, share(magnitude, coreShare), core),
     { fine: 10 },
   )
-  scene.addScaled((x, y) => Math.exp((-2.2 * frame(x, y)[0]) / radius), paint(scene, share(magnitude, 0.12), OLD_DISC))
-  const ringMagnitude = share(magnitude, 0.88 - coreShare)
-  scene.addScaled(ring, paint(scene, share(ringMagnitude, 0.75), YOUNG_DISC), { fine: 3, fineRadiusArcsec: 3.5 })
+  scene.addScaled((x, y) => Math.exp((-2.2 * frame(x, y)[0]) / radius), paint(scene, share(magnitude, 0.08), OLD_DISC))
+  const ringMagnitude = share(magnitude, 0.92 - coreShare)
+  scene.addScaled(ring, paint(scene, share(ringMagnitude, 0.72), YOUNG_RING), { fine: 3, fineRadiusArcsec: 3.5 })
   const knots = Array.from({ length: random.integer(4, 12) }, () => {
     const at = onSky(axisRatio, turn, radius + 0.3 * width * random.normal(), random.between(0, 2 * Math.PI))
     return { x: at.x + offset.x, y: at.y + offset.y, size: random.between(0.1, 0.18), weight: random.between(0.3, 1) }
   })
-  scene.addScaled(blobs(knots), paint(scene, share(ringMagnitude, 0.25), YOUNG_STARS), {
+  scene.addScaled(blobs(knots), paint(scene, share(ringMagnitude, 0.28), YOUNG_STARS), {
     fine: 3,
     fineRadiusArcsec: 3.5,
   })

@@ -18,9 +18,9 @@ interface LensRecipe {
 
 const RECIPES: Record<LensKind, LensRecipe> = {
   'lens-arc': {
-    einsteinRadius: [1.1, 2.4],
-    sourceOffset: [0.18, 0.42],
-    sourceRadius: [0.12, 0.3],
+    einsteinRadius: [1.2, 2.6],
+    sourceOffset: [0.14, 0.4],
+    sourceRadius: [0.15, 0.36],
     sourceMagnitude: [23.0, 25.2],
     axisRatio: [0.65, 0.95],
   },
