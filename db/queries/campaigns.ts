@@ -1,4 +1,4 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign, MeanParameters, RecipeRow, Rule } from '../schema/campaigns'
 import type { Role } from '../schema/people'
@@ -44,13 +44,19 @@ export interface CampaignSummary {
   survey: string
   acronym: string
   role: Role
+  /** How many people are to look at each candidate. */
+  gradesWanted: number
   candidates: number
+  imaged: number
+  /** Standing looks, none counted above what is wanted. */
+  gradesGiven: number
   confirmed: number
   split: number
 }
 
 /** The campaigns that a person is in, newest first. Calibration candidates are not counted. */
 export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<CampaignSummary[]> {
+  const wanted = sql<number>`(select grades_wanted from rule where rule.campaign_id = campaign.id order by version desc limit 1)`
   return db
     .selectFrom('membership')
     .innerJoin('campaign', 'campaign.id', 'membership.campaign_id')
@@ -59,7 +65,10 @@ export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<C
     )
     .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
     .select((e) => [
+      wanted.as('gradesWanted'),
       e.fn.count<number>('candidate.id').as('candidates'),
+      e.fn.count<number>('candidate.imaged_at').as('imaged'),
+      sql<number>`coalesce(sum(min(candidate.grades_given, ${wanted})), 0)`.as('gradesGiven'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'confirmed').as('confirmed'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'split').as('split'),
     ])
@@ -81,8 +90,20 @@ export async function requireRule(db: Kysely<DB>, campaignId: number): Promise<R
     .executeTakeFirstOrThrow()
 }
 
-export async function listRules(db: Kysely<DB>, campaignId: number): Promise<Rule[]> {
-  return db.selectFrom('rule').selectAll().where('campaign_id', '=', campaignId).orderBy('version', 'desc').execute()
+/** Newest first, each with who made it. */
+export async function listRules(db: Kysely<DB>, campaignId: number): Promise<(Rule & { author: string })[]> {
+  return db
+    .selectFrom('rule')
+    .innerJoin('person', 'person.id', 'rule.created_by')
+    .selectAll('rule')
+    .select('person.name as author')
+    .where('campaign_id', '=', campaignId)
+    .orderBy('version', 'desc')
+    .execute()
+}
+
+export async function setNamePattern(db: Kysely<DB>, campaignId: number, namePattern: string | null): Promise<void> {
+  await db.updateTable('campaign').set({ name_pattern: namePattern }).where('id', '=', campaignId).execute()
 }
 
 export async function insertRule(

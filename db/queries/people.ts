@@ -1,7 +1,7 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign } from '../schema/campaigns'
-import type { Invitation, Person, Role } from '../schema/people'
+import type { Person, Role } from '../schema/people'
 
 export async function findPerson(db: Kysely<DB>, id: number): Promise<Person | null> {
   return (await db.selectFrom('person').selectAll().where('id', '=', id).executeTakeFirst()) ?? null
@@ -13,7 +13,17 @@ export async function findPersonByEmail(db: Kysely<DB>, email: string): Promise<
 }
 
 export async function hasAdministrator(db: Kysely<DB>): Promise<boolean> {
-  return (await db.selectFrom('person').select('id').where('is_admin', '=', 1).executeTakeFirst()) !== undefined
+  return (await countAdministrators(db)) > 0
+}
+
+export async function countAdministrators(db: Kysely<DB>): Promise<number> {
+  const row = await db
+    .selectFrom('person')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('is_admin', '=', 1)
+    .where('left_at', 'is', null)
+    .executeTakeFirstOrThrow()
+  return row.n
 }
 
 export async function insertPerson(
@@ -35,8 +45,49 @@ export async function insertPerson(
   return row.id
 }
 
+/** Ends every session of the account: the epoch that they were signed with no longer holds. */
 export async function setPassword(db: Kysely<DB>, personId: number, passwordHash: string): Promise<void> {
-  await db.updateTable('person').set({ password_hash: passwordHash }).where('id', '=', personId).execute()
+  await db
+    .updateTable('person')
+    .set({ password_hash: passwordHash, session_epoch: sql`session_epoch + 1` })
+    .where('id', '=', personId)
+    .execute()
+}
+
+export async function setPersonName(db: Kysely<DB>, personId: number, name: string): Promise<void> {
+  await db.updateTable('person').set({ name }).where('id', '=', personId).execute()
+}
+
+export async function setAdministrator(db: Kysely<DB>, personId: number, isAdmin: boolean): Promise<void> {
+  await db
+    .updateTable('person')
+    .set({ is_admin: isAdmin ? 1 : 0 })
+    .where('id', '=', personId)
+    .execute()
+}
+
+export interface Account {
+  id: number
+  name: string
+  email: string | null
+  isAdmin: 0 | 1
+  createdAt: string
+  campaigns: number
+}
+
+/** Every account in use, by name, with the number of campaigns it is in. */
+export async function listAccounts(db: Kysely<DB>): Promise<Account[]> {
+  return db
+    .selectFrom('person')
+    .leftJoin('membership', (join) =>
+      join.onRef('membership.person_id', '=', 'person.id').on('membership.ended_at', 'is', null),
+    )
+    .select(['person.id', 'person.name', 'person.email', 'person.is_admin as isAdmin', 'person.created_at as createdAt'])
+    .select((e) => e.fn.count<number>('membership.id').as('campaigns'))
+    .where('person.left_at', 'is', null)
+    .groupBy('person.id')
+    .orderBy('person.name')
+    .execute()
 }
 
 export async function findCampaignMembership(
@@ -106,99 +157,51 @@ export async function upsertMembership(
     .execute()
 }
 
-export async function countMembershipsEver(db: Kysely<DB>, campaignId: number): Promise<number> {
-  const row = await db
-    .selectFrom('membership')
-    .select((e) => e.fn.countAll<number>().as('n'))
-    .where('campaign_id', '=', campaignId)
-    .executeTakeFirstOrThrow()
-  return row.n
+/** Pseudonyms of everybody who is or was in the campaign. */
+export async function listPseudonyms(db: Kysely<DB>, campaignId: number): Promise<string[]> {
+  const rows = await db.selectFrom('membership').select('pseudonym').where('campaign_id', '=', campaignId).execute()
+  return rows.map((row) => row.pseudonym)
 }
 
-export async function insertInvitation(
-  db: Kysely<DB>,
-  invitation: {
-    campaignId: number
-    email: string
-    role: Role
-    tokenHash: string
-    invitedBy: number
-    now: string
-    expiresAt: string
-  },
-): Promise<number> {
-  const row = await db
-    .insertInto('invitation')
-    .values({
-      campaign_id: invitation.campaignId,
-      email: invitation.email,
-      role: invitation.role,
-      token_hash: invitation.tokenHash,
-      invited_by: invitation.invitedBy,
-      created_at: invitation.now,
-      expires_at: invitation.expiresAt,
-      accepted_at: null,
-      accepted_by: null,
-      withdrawn_at: null,
-    })
-    .returning('id')
-    .executeTakeFirstOrThrow()
-  return row.id
-}
-
-/** Takes back every open invitation of this address to this campaign: only the newest link works. */
-export async function withdrawInvitations(
+/** Also one that has ended. */
+export async function findMembership(
   db: Kysely<DB>,
   campaignId: number,
-  email: string,
-  now: string,
-): Promise<number> {
-  const result = await db
-    .updateTable('invitation')
-    .set({ withdrawn_at: now })
-    .where('campaign_id', '=', campaignId)
-    .where('email', '=', email)
-    .where('accepted_at', 'is', null)
-    .where('withdrawn_at', 'is', null)
-    .executeTakeFirst()
-  return Number(result.numUpdatedRows)
-}
-
-export interface OpenInvitation {
-  id: number
-  email: string
-  role: Role
-  createdAt: string
-  expiresAt: string
-}
-
-export async function listOpenInvitations(db: Kysely<DB>, campaignId: number): Promise<OpenInvitation[]> {
-  return db
-    .selectFrom('invitation')
-    .select(['id', 'email', 'role', 'created_at as createdAt', 'expires_at as expiresAt'])
-    .where('campaign_id', '=', campaignId)
-    .where('accepted_at', 'is', null)
-    .where('withdrawn_at', 'is', null)
-    .orderBy('id', 'desc')
-    .execute()
-}
-
-export async function findInvitation(
-  db: Kysely<DB>,
-  tokenHash: string,
-): Promise<(Invitation & { campaignName: string; slug: string }) | null> {
+  personId: number,
+): Promise<{ role: Role; pseudonym: string; endedAt: string | null; name: string } | null> {
   const row = await db
-    .selectFrom('invitation')
-    .innerJoin('campaign', 'campaign.id', 'invitation.campaign_id')
-    .selectAll('invitation')
-    .select(['campaign.name as campaignName', 'campaign.slug'])
-    .where('token_hash', '=', tokenHash)
+    .selectFrom('membership')
+    .innerJoin('person', 'person.id', 'membership.person_id')
+    .select(['membership.role', 'membership.pseudonym', 'membership.ended_at as endedAt', 'person.name'])
+    .where('membership.campaign_id', '=', campaignId)
+    .where('membership.person_id', '=', personId)
     .executeTakeFirst()
   return row ?? null
 }
 
-export async function setInvitationAccepted(db: Kysely<DB>, id: number, personId: number, now: string): Promise<void> {
-  await db.updateTable('invitation').set({ accepted_at: now, accepted_by: personId }).where('id', '=', id).execute()
+export async function countLeads(db: Kysely<DB>, campaignId: number): Promise<number> {
+  const row = await db
+    .selectFrom('membership')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('campaign_id', '=', campaignId)
+    .where('role', '=', 'lead')
+    .where('ended_at', 'is', null)
+    .executeTakeFirstOrThrow()
+  return row.n
+}
+
+export async function setMembership(
+  db: Kysely<DB>,
+  campaignId: number,
+  personId: number,
+  change: { role?: Role; ended_at?: string },
+): Promise<void> {
+  await db
+    .updateTable('membership')
+    .set(change)
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .execute()
 }
 
 export async function getSiteValue(db: Kysely<DB>, key: string): Promise<string | null> {
@@ -212,6 +215,10 @@ export async function setSiteValue(db: Kysely<DB>, key: string, value: string): 
     .values({ key, value })
     .onConflict((conflict) => conflict.column('key').doUpdateSet({ value }))
     .execute()
+}
+
+export async function deleteSiteValues(db: Kysely<DB>, keys: string[]): Promise<void> {
+  await db.deleteFrom('site').where('key', 'in', keys).execute()
 }
 
 export async function leadsSomeCampaign(db: Kysely<DB>, personId: number): Promise<boolean> {

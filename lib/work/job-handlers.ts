@@ -1,5 +1,9 @@
 import 'server-only'
+import { JOB } from '@/lib/platform/jobs/job-kinds'
 import type { JobHandlers } from '@/lib/platform/jobs/run-jobs'
+import { sendMailJob } from '@/lib/platform/mail/deliver-mail'
 
 /** Every kind of job and who does it. Rooms add theirs here. */
-export const jobHandlers: JobHandlers = {}
+export const jobHandlers: JobHandlers = {
+  [JOB.sendMail]: sendMailJob,
+}

@@ -4,6 +4,7 @@ import { database } from '@/lib/platform/database'
 import { startJobLoop } from '@/lib/platform/jobs/run-jobs'
 import { log } from '@/lib/platform/log'
 import { jobHandlers } from './job-handlers'
+import { makeSetupCode } from './people/setup-code'
 
 const shared = globalThis as typeof globalThis & { ringsideStarted?: boolean }
 
@@ -14,6 +15,9 @@ export async function startServer(): Promise<void> {
   // next-auth reads its address from the environment only.
   process.env.NEXTAUTH_URL ??= config().siteUrl
   const db = await database()
+  const code = await makeSetupCode(db)
+  // Plain, not through the log: a person looks for it, at every level of the log.
+  if (code) console.log(`First visit: open ${config().siteUrl}/welcome and enter the one-time code ${code}`)
   startJobLoop(db, jobHandlers)
   log.info({ data: config().dataFolder, site: config().siteUrl }, 'ringside started')
 }

@@ -1,27 +1,41 @@
 import { z } from 'zod'
 import { DEFAULT_MEAN_RULE } from '@/lib/science/agreement/mean-rule'
 
-const count = (what: string) =>
-  z.coerce
-    .number(`${what} is a whole number.`)
-    .int(`${what} is a whole number.`)
-    .min(1, `${what} is at least 1.`)
-    .max(50, `${what} is at most 50.`)
+/** An empty field is a missing number, not 0, and `1,5` is what many write for 1.5. */
+const typedNumber = (value: unknown) =>
+  typeof value === 'string' ? (value.trim() === '' ? Number.NaN : Number(value.trim().replace(',', '.'))) : value
 
-const points = (what: string) =>
-  z.coerce
-    .number(`${what} is a number of points.`)
-    .min(0, `${what} is between 0 and 3 points.`)
-    .max(3, `${what} is between 0 and 3 points.`)
+const count = (what: string, fallback: number) =>
+  z
+    .preprocess(
+      typedNumber,
+      z
+        .number(`${what} is a whole number, such as ${fallback}.`)
+        .int(`${what} is a whole number, such as ${fallback}.`)
+        .min(1, `${what} is at least 1.`)
+        .max(50, `${what} is at most 50.`),
+    )
+    .default(fallback)
+
+const points = (what: string, fallback: number) =>
+  z
+    .preprocess(
+      typedNumber,
+      z
+        .number(`${what} is a number of points, such as ${fallback}.`)
+        .min(0, `${what} is between 0 and 3 points.`)
+        .max(3, `${what} is between 0 and 3 points.`),
+    )
+    .default(fallback)
 
 /** Thresholds of the mean method. Grade points: A 3, B 2, C 1, N 0. */
 export const RuleInput = z
   .object({
-    gradesWanted: count('The number of grades wanted').default(DEFAULT_MEAN_RULE.gradesWanted),
-    leastGrades: count('The least number of grades').default(DEFAULT_MEAN_RULE.leastGrades),
-    confirmMean: points('The mean that confirms').default(DEFAULT_MEAN_RULE.confirmMean),
-    setAsideMean: points('The mean that sets aside').default(DEFAULT_MEAN_RULE.setAsideMean),
-    splitSpread: points('The spread that splits').default(DEFAULT_MEAN_RULE.splitSpread),
+    gradesWanted: count('The number of grades wanted', DEFAULT_MEAN_RULE.gradesWanted),
+    leastGrades: count('The least number of grades', DEFAULT_MEAN_RULE.leastGrades),
+    confirmMean: points('The mean that confirms', DEFAULT_MEAN_RULE.confirmMean),
+    setAsideMean: points('The mean that sets aside', DEFAULT_MEAN_RULE.setAsideMean),
+    splitSpread: points('The spread that splits', DEFAULT_MEAN_RULE.splitSpread),
   })
   .superRefine((rule, context) => {
     if (rule.leastGrades > rule.gradesWanted) {

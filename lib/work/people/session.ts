@@ -2,7 +2,7 @@ import 'server-only'
 import { getServerSession } from 'next-auth'
 import { redirect } from 'next/navigation'
 import { cache } from 'react'
-import { findPerson } from '@/db/queries/people'
+import { findPerson, hasAdministrator } from '@/db/queries/people'
 import { database } from '@/lib/platform/database'
 import { authOptions } from './auth-options'
 import type { Viewer } from './viewer'
@@ -16,9 +16,10 @@ export const getViewer = cache(async (): Promise<Viewer | null> => {
   return { id: person.id, name: person.name, email: person.email, isAdmin: person.is_admin === 1 }
 })
 
-/** For pages: sends a signed-out visitor to the sign-in page and back afterwards. */
+/** For pages: sends a signed-out visitor to the sign-in page and back afterwards; on a site without administrator, to make one. */
 export async function requireViewer(returnTo: string): Promise<Viewer> {
   const viewer = await getViewer()
+  if (!viewer && !(await hasAdministrator(await database()))) redirect('/welcome')
   if (!viewer) redirect(`/signin?next=${encodeURIComponent(returnTo)}`)
   return viewer
 }

@@ -1,0 +1,80 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { countCandidates, type CampaignCounts } from '@/db/queries/campaigns'
+import { listOpenInvitations } from '@/db/queries/invitations'
+import { countUnfinishedJobs } from '@/db/queries/jobs'
+import {
+  countLeftFor,
+  countLookedAtBy,
+  countRefusedFiles,
+  findNewestRun,
+  listNewestConfirmed,
+  sumGradesGiven,
+} from '@/db/queries/overview'
+import { listMembers } from '@/db/queries/people'
+import type { DB } from '@/db/schema'
+import type { RunSummary } from '@/db/schema/consensus'
+import { fromJson } from '@/db/schema/values'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { ruleInForce, type RuleInForce } from './rule-in-force'
+
+export interface CampaignOverview {
+  rule: RuleInForce
+  candidates: number
+  imaged: number
+  /** Looks given and wanted at all imaged candidates together. */
+  grading: { given: number; wanted: number }
+  /** For those who grade: what is left for them and what they have looked at. */
+  mine: { left: number; lookedAt: number } | null
+  /** For leads and viewers. A grader's own judgement must not know how the others' turned out. */
+  outcome: {
+    counts: CampaignCounts
+    run: { at: string; summary: RunSummary } | null
+    newestConfirmed: { id: number; name: string }[]
+  } | null
+  /** For leads. */
+  upkeep: { graders: number; openInvitations: number; refusedFiles: number; jobs: number } | null
+}
+
+const CONFIRMED_SHOWN = 8
+
+async function outcomeOf(db: Kysely<DB>, campaignId: number, counts: CampaignCounts) {
+  const [run, newestConfirmed] = await Promise.all([
+    findNewestRun(db, campaignId),
+    listNewestConfirmed(db, campaignId, CONFIRMED_SHOWN),
+  ])
+  return { counts, run: run && { at: run.created_at, summary: fromJson(run.summary) }, newestConfirmed }
+}
+
+async function upkeepOf(db: Kysely<DB>, campaignId: number) {
+  const [members, invitations, refusedFiles, jobs] = await Promise.all([
+    listMembers(db, campaignId),
+    listOpenInvitations(db, campaignId),
+    countRefusedFiles(db, campaignId),
+    countUnfinishedJobs(db, campaignId),
+  ])
+  const graders = members.filter((member) => member.role !== 'viewer').length
+  return { graders, openInvitations: invitations.length, refusedFiles, jobs }
+}
+
+/** Where the campaign stands and what waits, as far as the person's role may know. */
+export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<CampaignOverview> {
+  const { campaign, viewer, role } = permit
+  const [rule, counts] = await Promise.all([ruleInForce(db, campaign.id), countCandidates(db, campaign.id)])
+  const [given, left, lookedAt, outcome, upkeep] = await Promise.all([
+    sumGradesGiven(db, campaign.id, rule.gradesWanted),
+    role === 'viewer' ? 0 : countLeftFor(db, campaign.id, viewer.id, rule.gradesWanted),
+    role === 'viewer' ? 0 : countLookedAtBy(db, campaign.id, viewer.id),
+    role === 'grader' ? null : outcomeOf(db, campaign.id, counts),
+    role === 'lead' ? upkeepOf(db, campaign.id) : null,
+  ])
+  return {
+    rule,
+    candidates: counts.candidates,
+    imaged: counts.imaged,
+    grading: { given, wanted: rule.gradesWanted * counts.imaged },
+    mine: role === 'viewer' ? null : { left, lookedAt },
+    outcome,
+    upkeep,
+  }
+}

@@ -1,0 +1,81 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { insertRule, listRules, requireRule, setNamePattern } from '@/db/queries/campaigns'
+import type { DB } from '@/db/schema'
+import { recordEvent } from '@/lib/platform/audit/record-event'
+import { isoTime } from '@/lib/platform/clock'
+import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
+import { JOB } from '@/lib/platform/jobs/job-kinds'
+import { conflict } from '@/lib/platform/problems/problem'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import type { RuleInput } from './campaign-input'
+import { ruleOf, type RuleInForce } from './rule-in-force'
+
+export interface RuleVersion extends RuleInForce {
+  author: string
+  createdAt: string
+}
+
+/** Every version of the rule, newest (the one in force) first. */
+export async function listRuleVersions(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<RuleVersion[]> {
+  const rows = await listRules(db, permit.campaign.id)
+  return rows.map((row) => ({ ...ruleOf(row), author: row.author, createdAt: row.created_at }))
+}
+
+/** Appends a version and asks for a consensus run, which applies it to every candidate. Earlier versions stay as they were. */
+export async function changeRule(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  input: RuleInput,
+): Promise<{ version: number }> {
+  const { campaign, viewer } = permit
+  const { gradesWanted, leastGrades, confirmMean, setAsideMean, splitSpread } = input
+  const parameters = { confirmMean, setAsideMean, splitSpread }
+  return db.transaction().execute(async (transaction) => {
+    const before = ruleOf(await requireRule(transaction, campaign.id))
+    const same = (Object.keys(input) as (keyof RuleInput)[]).every((key) => input[key] === before[key])
+    if (same) throw conflict('rule-unchanged', `This is the rule in force already (version ${before.version}).`)
+    const version = before.version + 1
+    const now = isoTime()
+    const campaignId = campaign.id
+    await insertRule(transaction, {
+      campaignId,
+      version,
+      gradesWanted,
+      leastGrades,
+      parameters,
+      createdBy: viewer.id,
+      now,
+    })
+    await enqueueJob(transaction, {
+      kind: JOB.consensus,
+      campaignId,
+      uniqueKey: `consensus:${campaignId}`,
+      payload: { campaignId },
+    })
+    await recordEvent(transaction, {
+      personId: viewer.id,
+      campaignId,
+      action: 'campaigns.rule-changed',
+      subject: String(version),
+    })
+    return { version }
+  })
+}
+
+/** For files that arrive from now on; what was matched already stays. */
+export async function changeNamePattern(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  namePattern: string | null,
+): Promise<void> {
+  await db.transaction().execute(async (transaction) => {
+    await setNamePattern(transaction, permit.campaign.id, namePattern)
+    await recordEvent(transaction, {
+      personId: permit.viewer.id,
+      campaignId: permit.campaign.id,
+      action: 'campaigns.name-pattern-changed',
+      detail: { from: permit.campaign.name_pattern, to: namePattern },
+    })
+  })
+}

@@ -1,0 +1,41 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { listCampaigns as listCampaignRows } from '@/db/queries/campaigns'
+import { countLeftFor } from '@/db/queries/overview'
+import type { DB } from '@/db/schema'
+import type { Role } from '@/db/schema/people'
+import { signInNeeded } from '@/lib/platform/problems/problem'
+import type { Viewer } from '@/lib/work/people/viewer'
+
+export interface CampaignCard {
+  slug: string
+  name: string
+  survey: string
+  acronym: string
+  role: Role
+  candidates: number
+  imaged: number
+  gradesGiven: number
+  /** Looks wanted altogether. */
+  gradesWanted: number
+  /** Left for this person to look at; null for a viewer, who grades nothing. */
+  left: number | null
+  /** null for a grader, who learns states candidate by candidate after grading. */
+  confirmed: number | null
+  split: number | null
+}
+
+/** The campaigns that the person is in, newest first, with what says where each stands. */
+export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Promise<CampaignCard[]> {
+  if (!viewer) throw signInNeeded()
+  const rows = await listCampaignRows(db, viewer.id)
+  return Promise.all(
+    rows.map(async ({ id, gradesWanted, confirmed, split, ...row }) => ({
+      ...row,
+      gradesWanted: gradesWanted * row.imaged,
+      left: row.role === 'viewer' ? null : await countLeftFor(db, id, viewer.id, gradesWanted),
+      confirmed: row.role === 'grader' ? null : confirmed,
+      split: row.role === 'grader' ? null : split,
+    })),
+  )
+}
