@@ -121,6 +121,7 @@ const STATEMENTS = [
     file_id integer not null references file (id),
     line integer not null,
     file_name text,
+    file_base text collate nocase,
     candidate text,
     band text,
     ra_deg real,
@@ -130,7 +131,8 @@ const STATEMENTS = [
     lens_redshift real,
     source_redshift real
   ) strict`,
-  `create index manifest_row_name on manifest_row (campaign_id, file_name)`,
+  `create index manifest_row_base on manifest_row (campaign_id, file_base)`,
+  `create index manifest_row_file on manifest_row (file_id)`,
   `create index manifest_row_candidate on manifest_row (campaign_id, candidate)`,
 
   `create table candidate (

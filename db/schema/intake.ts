@@ -39,7 +39,10 @@ export interface ManifestRowTable {
   campaign_id: number
   file_id: number
   line: number
+  /** As the manifest writes it. */
   file_name: string | null
+  /** Its last part without endings, by which delivered files find their row; compared without regard to case. */
+  file_base: string | null
   candidate: string | null
   band: string | null
   ra_deg: number | null
