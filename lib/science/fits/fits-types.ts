@@ -41,7 +41,7 @@ export type FitsFault =
   | 'corrupt-compression'
   | 'unsupported'
 
-/** A file that is refused. The message is one sentence a person can act on. */
+/** A file that is refused. The message says in a sentence what is wrong, with the numbers, and where there is one, what to do. */
 export class FitsError extends Error {
   readonly name = 'FitsError'
   readonly fault: FitsFault

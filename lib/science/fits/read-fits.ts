@@ -37,7 +37,7 @@ export async function readFits(bytes: Uint8Array, limits: FitsLimits = DEFAULT_F
   const images: FitsImage[] = []
   for (const unit of units) {
     if (pixelCount(unit) > 0)
-      images.push(unit.kind === 'tiles' ? await readTiledImage(plain, unit) : readPlainImage(plain, unit))
+      images.push(unit.kind === 'tiles' ? readTiledImage(plain, unit) : readPlainImage(plain, unit))
   }
   if (images.length === 0)
     throw new FitsError('no-image', `The file holds no two-dimensional image: ${whatThereIs(units)}.`)
@@ -108,7 +108,7 @@ function readPlainImage(bytes: Uint8Array, unit: Unit): FitsImage {
   return { hdu, extname: extensionName(header.EXTNAME), header, width, height, planes }
 }
 
-export function extensionName(value: unknown): string | null {
+function extensionName(value: unknown): string | null {
   return typeof value === 'string' && value !== '' ? value : null
 }
 

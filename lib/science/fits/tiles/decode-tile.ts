@@ -1,7 +1,7 @@
 // One tile to the numbers that were compressed: from its own column, or from the columns that stand in for it.
 import { FitsError } from '@/lib/science/fits/fits-types'
 import { bigEndianValues, decodeGzipTile } from '@/lib/science/fits/tiles/gzip-tile'
-import { decodeHcompress, OverflowError } from '@/lib/science/fits/tiles/hcompress'
+import { decodeHcompress } from '@/lib/science/fits/tiles/hcompress'
 import { decodePlio } from '@/lib/science/fits/tiles/plio'
 import { decodeRice } from '@/lib/science/fits/tiles/rice'
 import type { HeapArray, TileTable } from '@/lib/science/fits/tiles/tile-table'
@@ -21,13 +21,13 @@ export interface StoredTile {
 }
 
 /** @throws FitsError 'corrupt-compression' or 'unsupported', naming the tile. */
-export async function decodeTile(
+export function decodeTile(
   table: TileTable,
   row: number,
   shape: number[],
   coding: TileCoding,
   hdu: number,
-): Promise<StoredTile> {
+): StoredTile {
   const count = shape.reduce((product, length) => product * length, 1)
   const real = coding.bitpix === -32 ? 4 : coding.bitpix === -64 ? 8 : null
   const quantised = real !== null && table.number('ZSCALE', row) !== null
@@ -36,12 +36,12 @@ export async function decodeTile(
   const raw = table.heapArray('UNCOMPRESSED_DATA', row)
   try {
     if (compressed !== null)
-      return { values: await decompress(compressed, shape, count, coding, quantised ? null : real), quantised }
+      return { values: decompress(compressed, shape, count, coding, quantised ? null : real), quantised }
     if (gzipped !== null) return { values: decodeGzipTile(gzipped.bytes, count, false, real), quantised: false }
     if (raw !== null)
       return { values: bigEndianValues(raw.bytes, count, raw.elementBytes, 'ED'.includes(raw.code)), quantised: false }
   } catch (cause) {
-    const fault = cause instanceof OverflowError || cause instanceof UnreadError ? 'unsupported' : 'corrupt-compression'
+    const fault = cause instanceof UnreadError ? 'unsupported' : 'corrupt-compression'
     const advice = fault === 'unsupported' ? ' Unpack the file with funpack first.' : ''
     throw new FitsError(
       fault,
@@ -52,13 +52,13 @@ export async function decodeTile(
   throw new FitsError('corrupt-compression', `Tile ${row + 1} of HDU ${hdu} has no data.`)
 }
 
-async function decompress(
+function decompress(
   heap: HeapArray,
   shape: number[],
   count: number,
   coding: TileCoding,
   real: 4 | 8 | null,
-): Promise<ArrayLike<number>> {
+): ArrayLike<number> {
   const { method, parameters } = coding
   if (method === 'GZIP_1' || method === 'GZIP_2') return decodeGzipTile(heap.bytes, count, method === 'GZIP_2', real)
   if (real !== null) throw new RangeError(`its pixels are reals without ZSCALE, which ${method} cannot hold`)

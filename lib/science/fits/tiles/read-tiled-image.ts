@@ -19,7 +19,7 @@ const METHODS: Readonly<Record<string, TileCoding['method']>> = {
 const QUANTISATIONS: readonly string[] = ['NONE', 'NO_DITHER', 'SUBTRACTIVE_DITHER_1', 'SUBTRACTIVE_DITHER_2']
 
 /** The caller has checked that the bytes of the unit are there and that its pixels are within the limits. */
-export async function readTiledImage(bytes: Uint8Array, unit: Unit): Promise<FitsImage> {
+export function readTiledImage(bytes: Uint8Array, unit: Unit): FitsImage {
   const { header, hdu } = unit
   const axes = axisLengths(header, hdu, 'Z')
   const coding = readCoding(header, hdu)
@@ -41,7 +41,7 @@ export async function readTiledImage(bytes: Uint8Array, unit: Unit): Promise<Fit
   for (let row = 0; row < tiles; row++) {
     const origin = originOf(row, tilesAlong, tile)
     const shape = axes.map((length, axis) => Math.min(tile[axis], length - origin[axis]))
-    const stored = await decodeTile(table, row, shape, coding, hdu)
+    const stored = decodeTile(table, row, shape, coding, hdu)
     layTile(planes, axes, origin, shape, physicalValues(stored, table, row, coding.bitpix, quantisation, scaling, hdu))
   }
   return { hdu, extname: tiledName(header.EXTNAME), header: imageHeader(header), width, height, planes }
