@@ -1,5 +1,6 @@
-import { sql, type Kysely } from 'kysely'
+import { sql, type Insertable, type Kysely } from 'kysely'
 import type { DB } from '../schema'
+import type { GradeRow, GradeTable } from '../schema/grading'
 
 /** `ids` as one bound value, so that a list of any length stays one statement. */
 function among(ids: readonly number[]) {
@@ -41,4 +42,78 @@ export async function listJudgedAmong(
     )
     .execute()
   return rows.map((row) => row.candidate_id)
+}
+
+export interface CandidateToGrade {
+  id: number
+  imaged_at: string | null
+  grades_given: number
+}
+
+export async function findCandidateToGrade(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateId: number,
+): Promise<CandidateToGrade | null> {
+  const row = await db
+    .selectFrom('candidate')
+    .select(['id', 'imaged_at', 'grades_given'])
+    .where('id', '=', candidateId)
+    .where('campaign_id', '=', campaignId)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function findGradeByUid(db: Kysely<DB>, uid: string): Promise<GradeRow | null> {
+  return (await db.selectFrom('grade').selectAll().where('uid', '=', uid).executeTakeFirst()) ?? null
+}
+
+/** The person's first grade of a candidate as it stands: the newest of its corrections. */
+export async function findStandingFirstGrade(
+  db: Kysely<DB>,
+  candidateId: number,
+  personId: number,
+): Promise<GradeRow | null> {
+  const row = await db
+    .selectFrom('grade')
+    .selectAll()
+    .where('candidate_id', '=', candidateId)
+    .where('occasion', '=', 'first')
+    .where('person_id', '=', personId)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function insertGrade(db: Kysely<DB>, grade: Insertable<GradeTable>): Promise<GradeRow> {
+  return db.insertInto('grade').values(grade).returningAll().executeTakeFirstOrThrow()
+}
+
+/** One more person has given a first grade; their lease has served. */
+export async function setFirstGradeGiven(db: Kysely<DB>, candidateId: number, personId: number): Promise<void> {
+  await db
+    .updateTable('candidate')
+    .set((e) => ({ grades_given: e('grades_given', '+', 1) }))
+    .where('id', '=', candidateId)
+    .execute()
+  await db.deleteFrom('lease').where('candidate_id', '=', candidateId).where('person_id', '=', personId).execute()
+}
+
+/** Live leases of a candidate: whether the person holds one, and how many others do. */
+export async function countLiveLeases(
+  db: Kysely<DB>,
+  candidateId: number,
+  personId: number,
+  now: string,
+): Promise<{ own: number; others: number }> {
+  return db
+    .selectFrom('lease')
+    .select((e) => [
+      e.fn.countAll<number>().filterWhere('person_id', '=', personId).as('own'),
+      e.fn.countAll<number>().filterWhere('person_id', '!=', personId).as('others'),
+    ])
+    .where('candidate_id', '=', candidateId)
+    .where('until', '>', now)
+    .executeTakeFirstOrThrow()
 }

@@ -1,0 +1,15 @@
+import { z } from 'zod'
+import { route } from '@/app/api/_lib/route'
+import { GradeInput } from '@/lib/work/grading/grade-input'
+import { recordGrade } from '@/lib/work/grading/record-grade'
+import { permitCampaign } from '@/lib/work/people/permission'
+
+/** PUT: this person's grade of the candidate, or a correction of it; repeating a call changes nothing. Graders and leads. */
+export const PUT = route({
+  params: z.object({ slug: z.string(), id: z.coerce.number('The candidate id is a whole number.').int().positive() }),
+  body: GradeInput,
+  handler: async ({ db, viewer, params, body }) => {
+    const permit = await permitCampaign(db, viewer, params.slug, 'grade')
+    return Response.json(await recordGrade(db, permit, params.id, body))
+  },
+})

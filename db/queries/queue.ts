@@ -1,0 +1,180 @@
+import { sql, type Kysely } from 'kysely'
+import type { DB } from '../schema'
+
+/** Whose queue it is, and how many grades a candidate of the campaign may have. */
+export interface Asker {
+  campaignId: number
+  personId: number
+  gradesWanted: number
+  now: string
+}
+
+const DECIDING_RULINGS = ['confirmed', 'set aside'] as const
+
+/**
+ * Candidates that this person may still be shown: imaged, short of the wanted number, not decided by a ruling that stands,
+ * never graded by them. Walks the index `candidate_queue`.
+ */
+function openTo(db: Kysely<DB>, { campaignId, personId, gradesWanted }: Asker) {
+  return db
+    .selectFrom('candidate')
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.imaged_at', 'is not', null)
+    .where('candidate.grades_given', '<', gradesWanted)
+    .where((e) =>
+      e.or([
+        e('candidate.ruling_id', 'is', null),
+        e.not(
+          e.exists(
+            e
+              .selectFrom('ruling')
+              .select('ruling.id')
+              .whereRef('ruling.id', '=', 'candidate.ruling_id')
+              .where('ruling.outcome', 'in', DECIDING_RULINGS),
+          ),
+        ),
+      ]),
+    )
+    .where((e) =>
+      e.not(
+        e.exists(
+          e
+            .selectFrom('grade')
+            .select('grade.id')
+            .whereRef('grade.candidate_id', '=', 'candidate.id')
+            .where('grade.person_id', '=', personId),
+        ),
+      ),
+    )
+}
+
+/** Room for one more person beside the grades that stand and the live leases of others. */
+function hasRoom({ personId, gradesWanted, now }: Asker) {
+  return sql<boolean>`candidate.grades_given + (
+    select count(*) from lease other where other.candidate_id = candidate.id
+      and other.person_id <> ${personId} and other.until > ${now}
+  ) < ${gradesWanted}`
+}
+
+export interface QueuedCandidate {
+  id: number
+  name: string
+  /** ICRS degrees */
+  raDeg: number | null
+  decDeg: number | null
+}
+
+const SHOWN = ['candidate.id', 'candidate.name', 'candidate.ra_deg as raDeg', 'candidate.dec_deg as decDeg'] as const
+
+/** What is lent to this person now and may still be graded, in the order in which it was lent. */
+export async function listLentCandidates(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
+  return openTo(db, asker)
+    .innerJoin('lease', 'lease.candidate_id', 'candidate.id')
+    .select(SHOWN)
+    .where('lease.person_id', '=', asker.personId)
+    .where('lease.until', '>', asker.now)
+    .where(hasRoom(asker))
+    .orderBy('lease.id')
+    .limit(limit)
+    .execute()
+}
+
+/** What may be lent to this person next: those nearest to their wanted number first, so that candidates get finished. */
+export async function listNextCandidates(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
+  return openTo(db, asker)
+    .select(SHOWN)
+    .where(hasRoom(asker))
+    .where((e) =>
+      e.not(
+        e.exists(
+          e
+            .selectFrom('lease')
+            .select('lease.id')
+            .whereRef('lease.candidate_id', '=', 'candidate.id')
+            .where('lease.person_id', '=', asker.personId),
+        ),
+      ),
+    )
+    .orderBy('candidate.grades_given', 'desc')
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
+}
+
+/** How many candidates this person may still be shown, those on other people's benches included. */
+export async function countOpenCandidates(db: Kysely<DB>, asker: Asker): Promise<number> {
+  const row = await openTo(db, asker)
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .executeTakeFirstOrThrow()
+  return row.n
+}
+
+export async function countGradedCandidates(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
+  const row = await db
+    .selectFrom('grade')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .where('occasion', '=', 'first')
+    .where('replaces', 'is', null)
+    .executeTakeFirstOrThrow()
+  return row.n
+}
+
+export async function hasImagedCandidate(db: Kysely<DB>, campaignId: number): Promise<boolean> {
+  const row = await db
+    .selectFrom('candidate')
+    .select('id')
+    .where('campaign_id', '=', campaignId)
+    .where('imaged_at', 'is not', null)
+    .limit(1)
+    .executeTakeFirst()
+  return row !== undefined
+}
+
+export async function deleteExpiredLeases(db: Kysely<DB>, campaignId: number, now: string): Promise<void> {
+  await db.deleteFrom('lease').where('campaign_id', '=', campaignId).where('until', '<=', now).execute()
+}
+
+export async function setLeasesUntil(
+  db: Kysely<DB>,
+  personId: number,
+  candidateIds: number[],
+  until: string,
+): Promise<void> {
+  await db
+    .updateTable('lease')
+    .set({ until })
+    .where('person_id', '=', personId)
+    .where('candidate_id', 'in', candidateIds)
+    .execute()
+}
+
+export async function insertLeases(
+  db: Kysely<DB>,
+  lease: { campaignId: number; personId: number; candidateIds: number[]; until: string },
+): Promise<void> {
+  await db
+    .insertInto('lease')
+    .values(
+      lease.candidateIds.map((id) => ({
+        campaign_id: lease.campaignId,
+        candidate_id: id,
+        person_id: lease.personId,
+        until: lease.until,
+      })),
+    )
+    .execute()
+}
+
+/** Of the named candidates, or of every candidate of the campaign. Answers how many there were. */
+export async function deleteLeases(
+  db: Kysely<DB>,
+  campaignId: number,
+  personId: number,
+  candidateIds: number[] | null,
+): Promise<number> {
+  let query = db.deleteFrom('lease').where('campaign_id', '=', campaignId).where('person_id', '=', personId)
+  if (candidateIds) query = query.where('candidate_id', 'in', candidateIds)
+  return Number((await query.executeTakeFirst()).numDeletedRows)
+}

@@ -1,0 +1,46 @@
+import { z } from 'zod'
+import { CANNOT_JUDGE_REASONS, TAGS } from './tags'
+
+export const MOST_REMARK_CHARACTERS = 2000
+
+/** The body of a grade as it arrives. Unknown fields are refused, so that a misspelt one is not lost in silence. */
+export const GradeInput = z
+  .strictObject({
+    grade: z.enum(['A', 'B', 'C', 'N', 'U'], 'A grade is A, B, C or N, or U for cannot judge.'),
+    /** Made by the client; a repeated delivery is recognised by it. */
+    id: z
+      .string()
+      .regex(/^[A-Za-z0-9_-]{8,64}$/, 'The id has 8 to 64 letters, digits, - or _, such as a UUID.')
+      .optional(),
+    tags: z
+      .array(z.enum(TAGS, `A tag is one of: ${TAGS.join(', ')}.`))
+      .max(TAGS.length)
+      .default([])
+      .transform((tags) => TAGS.filter((tag) => tags.includes(tag))),
+    remark: z
+      .string()
+      .trim()
+      .max(MOST_REMARK_CHARACTERS, `A remark has at most ${MOST_REMARK_CHARACTERS} characters.`)
+      .nullish()
+      .transform((text) => text || null),
+    view: z
+      .string()
+      .max(40)
+      .nullish()
+      .transform((key) => key ?? null),
+    seconds: z
+      .number('The time taken is a number of seconds.')
+      .min(0, 'The time taken is not negative.')
+      .max(86_400, 'The time taken is at most 86400 seconds.')
+      .nullish()
+      .transform((seconds) => seconds ?? null),
+    reason: z
+      .enum(CANNOT_JUDGE_REASONS, `A reason is one of: ${CANNOT_JUDGE_REASONS.join(', ')}.`)
+      .nullish()
+      .transform((reason) => reason ?? null),
+  })
+  .refine(({ grade, reason }) => reason === null || grade === 'U', {
+    path: ['reason'],
+    message: 'A reason goes with U, cannot judge, only. Use the remark.',
+  })
+export type GradeInput = z.output<typeof GradeInput>

@@ -1,0 +1,167 @@
+import 'server-only'
+import { randomUUID } from 'node:crypto'
+import type { Kysely, Transaction } from 'kysely'
+import { requireRecipe } from '@/db/queries/campaigns'
+import {
+  countLiveLeases,
+  findCandidateToGrade,
+  findGradeByUid,
+  findStandingFirstGrade,
+  insertGrade,
+  setFirstGradeGiven,
+  type CandidateToGrade,
+} from '@/db/queries/grading'
+import type { DB } from '@/db/schema'
+import type { GradeLetter, GradeRow } from '@/db/schema/grading'
+import { fromJson, toJson, type IsoTime } from '@/db/schema/values'
+import { isoTime } from '@/lib/platform/clock'
+import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
+import { JOB } from '@/lib/platform/jobs/job-kinds'
+import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { queueProgress, type QueueProgress } from '@/lib/work/queue/queue-progress'
+import type { GradeInput } from './grade-input'
+
+export interface GivenGrade {
+  id: string
+  grade: GradeLetter
+  tags: string[]
+  reason: string | null
+  remark: string | null
+  view: string | null
+  seconds: number | null
+  givenAt: IsoTime
+}
+
+export interface RecordedGrade extends QueueProgress {
+  /** The person's grade of this candidate as it stands now. */
+  grade: GivenGrade
+  /** The id of the grade that this call corrected. */
+  replaced?: string
+}
+
+/** Grades of one moment are judged by one consensus run. */
+const CONSENSUS_DELAY_MS = 2000
+
+/**
+ * Records a person's grade of a candidate: the first one, or a correction of it, which is a new row that names the row it
+ * replaces. A repeated call changes nothing, told by its id or, without one, by its content.
+ *
+ * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
+ * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
+ * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`.
+ */
+export async function recordGrade(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'grade'>,
+  candidateId: number,
+  input: GradeInput,
+): Promise<RecordedGrade> {
+  const { campaign, viewer } = permit
+  const recorded = await db.transaction().execute(async (transaction) => {
+    const candidate = await findCandidateToGrade(transaction, campaign.id, candidateId)
+    if (!candidate) throw notFound('candidate')
+    if (!candidate.imaged_at) {
+      throw conflict('not-imaged', 'This candidate has no pictures yet, so there is nothing to grade. Try again later.')
+    }
+    const standing = await findStandingFirstGrade(transaction, candidateId, viewer.id)
+    const repeat = await isRepeat(transaction, candidateId, viewer.id, input, standing)
+    if (standing && repeat) return { row: standing, replaced: null }
+    const rule = await ruleInForce(transaction, campaign.id)
+    if (!standing) await assertRoom(transaction, candidate, viewer.id, rule)
+    const row = await insertGrade(transaction, {
+      uid: input.id ?? randomUUID(),
+      campaign_id: campaign.id,
+      candidate_id: candidateId,
+      person_id: viewer.id,
+      occasion: 'first',
+      grade: input.grade,
+      tags: toJson<string[]>(input.tags),
+      reason: input.reason,
+      remark: input.remark,
+      recipe_id: (await requireRecipe(transaction, campaign.id)).id,
+      view: input.view,
+      seconds: input.seconds,
+      replaces: standing?.id ?? null,
+      given_at: isoTime(),
+    })
+    if (!standing) await setFirstGradeGiven(transaction, candidateId, viewer.id)
+    if (candidate.grades_given + (standing ? 0 : 1) >= rule.leastGrades) await askForConsensus(transaction, campaign.id)
+    return { row, replaced: standing?.uid ?? null }
+  })
+  return {
+    grade: shapeGrade(recorded.row),
+    ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
+    ...(await queueProgress(db, permit)),
+  }
+}
+
+/** Whether this id, or else this content, has been recorded as a grade of this person and candidate. */
+async function isRepeat(
+  transaction: Transaction<DB>,
+  candidateId: number,
+  personId: number,
+  input: GradeInput,
+  standing: GradeRow | null,
+): Promise<boolean> {
+  const known = input.id ? await findGradeByUid(transaction, input.id) : null
+  if (known && (known.person_id !== personId || known.candidate_id !== candidateId)) {
+    throw conflict('grade-id-taken', 'This grade id belongs to another grade. Make a new id for each grade.')
+  }
+  return known !== null || (standing !== null && saysTheSame(standing, input))
+}
+
+function saysTheSame(standing: GradeRow, input: GradeInput): boolean {
+  return (
+    standing.grade === input.grade &&
+    standing.remark === input.remark &&
+    standing.reason === input.reason &&
+    standing.tags === toJson<string[]>(input.tags)
+  )
+}
+
+async function assertRoom(
+  transaction: Transaction<DB>,
+  candidate: CandidateToGrade,
+  personId: number,
+  rule: RuleInForce,
+): Promise<void> {
+  if (candidate.grades_given >= rule.gradesWanted) {
+    throw conflict(
+      'candidate-full',
+      `Others have given this candidate the ${rule.gradesWanted} grades it wanted meanwhile, so yours was not taken. Nothing else is affected; go on with the next.`,
+    )
+  }
+  const { own, others } = await countLiveLeases(transaction, candidate.id, personId, isoTime())
+  if (own === 0 && candidate.grades_given + others >= rule.gradesWanted) {
+    throw conflict(
+      'candidate-full',
+      'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.',
+    )
+  }
+}
+
+/** Same kind, key and payload as the consensus room asks with. */
+async function askForConsensus(transaction: Transaction<DB>, campaignId: number): Promise<void> {
+  await enqueueJob(transaction, {
+    kind: JOB.consensus,
+    campaignId,
+    uniqueKey: `${JOB.consensus}:${campaignId}`,
+    payload: { campaignId },
+    delayMs: CONSENSUS_DELAY_MS,
+  })
+}
+
+function shapeGrade(row: GradeRow): GivenGrade {
+  return {
+    id: row.uid,
+    grade: row.grade,
+    tags: fromJson(row.tags),
+    reason: row.reason,
+    remark: row.remark,
+    view: row.view,
+    seconds: row.seconds,
+    givenAt: row.given_at,
+  }
+}

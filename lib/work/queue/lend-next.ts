@@ -1,0 +1,76 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import {
+  deleteExpiredLeases,
+  hasImagedCandidate,
+  insertLeases,
+  listLentCandidates,
+  listNextCandidates,
+  setLeasesUntil,
+  type QueuedCandidate,
+} from '@/db/queries/queue'
+import type { DB } from '@/db/schema'
+import type { IsoTime } from '@/db/schema/values'
+import { isoTime } from '@/lib/platform/clock'
+import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
+import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { picturesOf, type PictureView } from '@/lib/work/stamps/candidate-pictures'
+import { LEASE_MS, MOST_LENT } from './lease-time'
+import { queueProgress, type QueueProgress } from './queue-progress'
+
+/** What a grader gets to see of a candidate before grading it: nothing that others, the machine or the rule made of it. */
+export interface BenchCandidate extends QueuedCandidate {
+  views: PictureView[]
+  geometry: StampGeometry
+}
+
+export interface LentQueue extends QueueProgress {
+  candidates: BenchCandidate[]
+  /** When the leases run out, unless asked again before. */
+  until: IsoTime
+  /** Whether the campaign has anything to grade at all. */
+  imaged: boolean
+}
+
+/**
+ * The next candidates for this person, lent for LEASE_MINUTES: first what they hold already, in the same order and renewed, then
+ * new ones. One immediate transaction reads the room that is left and takes it, so standing grades and live leases together
+ * never exceed the wanted number, however many ask at once.
+ */
+export async function lendNext(db: Kysely<DB>, permit: CampaignPermit<'grade'>, count: number): Promise<LentQueue> {
+  const { campaign, viewer } = permit
+  const wanted = Math.min(count, MOST_LENT)
+  const lent = await db.transaction().execute(async (transaction) => {
+    const { gradesWanted } = await ruleInForce(transaction, campaign.id)
+    const now = isoTime()
+    const until = isoTime(LEASE_MS)
+    const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted, now }
+    await deleteExpiredLeases(transaction, campaign.id, now)
+    const held = await listLentCandidates(transaction, asker, wanted)
+    if (held.length > 0) {
+      const ids = held.map(({ id }) => id)
+      await setLeasesUntil(transaction, viewer.id, ids, until)
+    }
+    const next = held.length < wanted ? await listNextCandidates(transaction, asker, wanted - held.length) : []
+    if (next.length > 0) {
+      const candidateIds = next.map(({ id }) => id)
+      await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
+    }
+    return { candidates: [...held, ...next], until }
+  })
+  const pictures = await picturesOf(
+    db,
+    campaign,
+    lent.candidates.map(({ id }) => id),
+  )
+  return {
+    candidates: lent.candidates.flatMap((candidate) => {
+      const shown = pictures.get(candidate.id)
+      return shown ? [{ ...candidate, views: shown.views, geometry: shown.geometry }] : []
+    }),
+    until: lent.until,
+    imaged: await hasImagedCandidate(db, campaign.id),
+    ...(await queueProgress(db, permit)),
+  }
+}
