@@ -8,9 +8,10 @@ async function graded() {
   const scenario = await makeScenario()
   const { db, campaign, graders } = scenario
   const ids = [await addImagedCandidate(db, campaign, 'SWS-1'), await addImagedCandidate(db, campaign, 'SWS-2')]
+  const own = await scenario.permit(graders[0], 'read')
   const permit = await scenario.permit(graders[0], 'grade')
   const give = (id: number, grade: string) => recordGrade(db, permit, id, GradeInput.parse({ grade }))
-  return { ...scenario, ids, own: permit, give }
+  return { ...scenario, ids, own, give }
 }
 
 it('shows a grader the grades of what they have judged themselves, and of nothing else', async () => {
