@@ -1,12 +1,19 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { findCandidate, findDesignation, listFilesOf } from '@/db/queries/candidates'
+import { listAnswersOf, listVerdictsOf, type EvidenceAnswer } from '@/db/queries/consensus'
+import { listRulingsOf, listStateChanges } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { RulingOutcome } from '@/db/schema/consensus'
 import type { GradeLetter } from '@/db/schema/grading'
-import type { CandidateState, StateCause } from '@/db/schema/intake'
-import type { IsoTime } from '@/db/schema/values'
+import type { Candidate, CandidateState, StateCause } from '@/db/schema/intake'
+import { fromJson, type IsoTime } from '@/db/schema/values'
+import { notFound } from '@/lib/platform/problems/problem'
+import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import { revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import type { CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
+import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
+import { describeRuling } from './describe-ruling'
 
 /** Everything there is to say about one candidate, for the case of a split and for the candidate's page. */
 export interface CandidateEvidence {
@@ -72,14 +79,7 @@ export interface EvidenceVerdict {
   spread: number | null
   reason: string
   /** The rule of the run that gave the verdict. */
-  rule: {
-    version: number
-    gradesWanted: number
-    leastGrades: number
-    confirmMean: number
-    setAsideMean: number
-    splitSpread: number
-  }
+  rule: RuleInForce
   at: IsoTime
 }
 
@@ -102,11 +102,105 @@ export interface EvidenceStateChange {
   at: IsoTime
 }
 
-/** @throws Problem 404 where the campaign has no such candidate. */
+/**
+ * Leads read names, everybody else pseudonyms; a grader who has not judged the candidate gets no judgement at all.
+ * @throws Problem 404 where the campaign has no such candidate.
+ */
 export async function candidateEvidence(
-  _db: Kysely<DB>,
-  _permit: CampaignPermit<'read'>,
-  _candidateId: number,
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateId: number,
 ): Promise<CandidateEvidence> {
-  throw new Error('The evidence of a candidate cannot be read yet.')
+  const candidate = await findCandidate(db, permit.campaign.id, candidateId)
+  if (!candidate) throw notFound('candidate')
+  const pictures = (await picturesOf(db, permit.campaign, [candidateId])).get(candidateId)
+  const revealed = (await revealedTo(db, permit, [candidateId])).has(candidateId)
+  return {
+    id: candidate.id,
+    name: candidate.name,
+    raDeg: candidate.ra_deg,
+    decDeg: candidate.dec_deg,
+    pixelScaleArcsec: candidate.pixel_scale_arcsec,
+    lensRedshift: candidate.lens_redshift,
+    sourceRedshift: candidate.source_redshift,
+    files: await listFilesOf(db, candidateId),
+    pictures: pictures ?? { views: [], geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true } },
+    judgement: revealed ? await judgementOf(db, permit, candidate) : null,
+  }
+}
+
+async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candidate: Candidate): Promise<Judgement> {
+  const named = permit.role === 'lead'
+  const by = (person: { name: string; pseudonym: string | null }) =>
+    named ? person.name : (person.pseudonym ?? 'a member')
+  const [answers, verdictRows, rulingRows, changes, designation] = await Promise.all([
+    listAnswersOf(db, candidate.id),
+    listVerdictsOf(db, candidate.id),
+    listRulingsOf(db, candidate.id),
+    listStateChanges(db, candidate.id),
+    findDesignation(db, candidate.id),
+  ])
+  const verdicts = verdictRows.map(({ rule, ...verdict }) => ({ ...verdict, rule: ruleOf(rule) }))
+  const rulings = rulingRows.map((row) => ({
+    id: row.id,
+    by: by(row),
+    outcome: row.outcome,
+    grade: row.grade,
+    reason: row.reason,
+    at: row.created_at,
+  }))
+  const causeInWords = (cause: StateCause, id: number) => {
+    if (cause === 'verdict') return verdicts.find((verdict) => verdict.id === id)?.reason ?? 'A verdict.'
+    const ruling = rulings.find((row) => row.id === id)
+    return ruling ? describeRuling(ruling) : 'A ruling.'
+  }
+  const newest = rulings.at(0)
+  const { state_cause: cause, state_cause_id: causeId } = candidate
+  return {
+    state: candidate.state,
+    stateSince: candidate.state_since,
+    stateReason: cause && causeId !== null ? causeInWords(cause, causeId) : 'Open: nothing has decided it yet.',
+    calibration: named && candidate.truth !== null,
+    score: candidate.score,
+    votes: countLetters(answers),
+    grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id)).sort(surestFirst),
+    verdict: verdicts.at(-1) ?? null,
+    rulings,
+    standingRuling: newest && newest.outcome !== 'by verdict' ? newest : null,
+    history: changes.map((change) => ({
+      id: change.id,
+      from: change.from_state,
+      to: change.to_state,
+      cause: change.cause,
+      reason: causeInWords(change.cause, change.cause_id),
+      at: change.at,
+    })),
+    designation,
+  }
+}
+
+const LETTERS: readonly GradeLetter[] = ['A', 'B', 'C', 'N', 'U']
+
+function countLetters(answers: readonly EvidenceAnswer[]): Record<GradeLetter, number> {
+  const votes = { A: 0, B: 0, C: 0, N: 0, U: 0 }
+  for (const { grade } of answers) votes[grade] += 1
+  return votes
+}
+
+function gradeOf(answer: EvidenceAnswer, by: string, viewerId: number): EvidenceGrade {
+  return {
+    id: answer.id,
+    by,
+    own: answer.personId === viewerId,
+    grade: answer.grade,
+    occasion: answer.occasion === 'asked' ? 'asked' : 'first',
+    tags: fromJson(answer.tags),
+    remark: answer.remark,
+    seconds: answer.seconds,
+    givenAt: answer.givenAt,
+  }
+}
+
+function surestFirst(a: EvidenceGrade, b: EvidenceGrade): number {
+  return LETTERS.indexOf(a.grade) - LETTERS.indexOf(b.grade) || a.id - b.id
 }

@@ -1,0 +1,447 @@
+import { sql, type Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { Rule } from '../schema/campaigns'
+import type { Run, RunSummary } from '../schema/consensus'
+import type { GradeLetter } from '../schema/grading'
+import type { CandidateState, StateCause } from '../schema/intake'
+import { toJson, type IsoTime, type Json } from '../schema/values'
+
+/**
+ * The answers that count for a verdict: of each person and candidate the newest standing one, given first or asked for.
+ * Repeats measure a grader's constancy and decide nothing. A correction is always newer than what it corrects, so the newest
+ * row is a standing one. With `upTo` they are the answers as they stood when that row was the newest grade: grades only grow.
+ */
+function countedAnswers(db: Kysely<DB>, upTo?: number) {
+  const base = db
+    .selectFrom('grade')
+    .where('grade.occasion', 'in', ['first', 'asked'])
+    .where(({ not, exists, selectFrom }) => {
+      const newer = selectFrom('grade as newer')
+        .select('newer.id')
+        .whereRef('newer.candidate_id', '=', 'grade.candidate_id')
+        .whereRef('newer.person_id', '=', 'grade.person_id')
+        .where('newer.occasion', 'in', ['first', 'asked'])
+        .whereRef('newer.id', '>', 'grade.id')
+      return not(exists(upTo === undefined ? newer : newer.where('newer.id', '<=', upTo)))
+    })
+  return upTo === undefined ? base : base.where('grade.id', '<=', upTo)
+}
+
+export interface CountedAnswer {
+  candidateId: number
+  personId: number
+  grade: GradeLetter
+}
+
+/** Counted answers of candidates `from` to `to`, in order of candidate and person. */
+export async function listCountedAnswers(
+  db: Kysely<DB>,
+  range: { campaignId: number; from: number; to: number; upTo: number },
+): Promise<CountedAnswer[]> {
+  return countedAnswers(db, range.upTo)
+    .select(['grade.candidate_id as candidateId', 'grade.person_id as personId', 'grade.grade'])
+    .where('grade.candidate_id', '>=', range.from)
+    .where('grade.candidate_id', '<=', range.to)
+    .where(sql<boolean>`+grade.campaign_id = ${range.campaignId}`)
+    .orderBy('grade.candidate_id')
+    .orderBy('grade.person_id')
+    .execute()
+}
+
+/** How many of each letter count, by candidate; candidates without an answer are not in the map. */
+export async function countVotes(
+  db: Kysely<DB>,
+  candidateIds: readonly number[],
+): Promise<Map<number, Record<GradeLetter, number>>> {
+  const votes = new Map<number, Record<GradeLetter, number>>()
+  if (candidateIds.length === 0) return votes
+  const rows = await countedAnswers(db)
+    .select(['grade.candidate_id as candidateId', 'grade.grade'])
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where(sql<boolean>`grade.candidate_id in (select value from json_each(${JSON.stringify(candidateIds)}))`)
+    .groupBy(['grade.candidate_id', 'grade.grade'])
+    .execute()
+  for (const row of rows) {
+    const counts = votes.get(row.candidateId) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }
+    counts[row.grade] = row.n
+    votes.set(row.candidateId, counts)
+  }
+  return votes
+}
+
+export interface EvidenceAnswer {
+  id: number
+  personId: number
+  name: string
+  /** null for a person who is no member and never was. */
+  pseudonym: string | null
+  grade: GradeLetter
+  occasion: 'first' | 'repeat' | 'asked'
+  tags: Json<string[]>
+  remark: string | null
+  seconds: number | null
+  givenAt: IsoTime
+}
+
+/** The counted answers of one candidate with who gave them, in order of their ids. */
+export async function listAnswersOf(db: Kysely<DB>, candidateId: number): Promise<EvidenceAnswer[]> {
+  return countedAnswers(db)
+    .innerJoin('person', 'person.id', 'grade.person_id')
+    .leftJoin('membership', (join) =>
+      join
+        .onRef('membership.person_id', '=', 'grade.person_id')
+        .onRef('membership.campaign_id', '=', 'grade.campaign_id'),
+    )
+    .select([
+      'grade.id',
+      'grade.person_id as personId',
+      'person.name',
+      'membership.pseudonym',
+      'grade.grade',
+      'grade.occasion',
+      'grade.tags',
+      'grade.remark',
+      'grade.seconds',
+      'grade.given_at as givenAt',
+    ])
+    .where('grade.candidate_id', '=', candidateId)
+    .orderBy('grade.id')
+    .execute()
+}
+
+export interface VerdictWithRule {
+  id: number
+  outcome: CandidateState
+  grades: number
+  cannotJudge: number
+  mean: number | null
+  spread: number | null
+  reason: string
+  at: IsoTime
+  rule: Rule
+}
+
+/** Every verdict of a candidate with the rule it came from, oldest first. */
+export async function listVerdictsOf(db: Kysely<DB>, candidateId: number): Promise<VerdictWithRule[]> {
+  const rows = await db
+    .selectFrom('verdict')
+    .innerJoin('run', 'run.id', 'verdict.run_id')
+    .innerJoin('rule', 'rule.id', 'run.rule_id')
+    .selectAll('rule')
+    .select([
+      'verdict.id as verdictId',
+      'verdict.outcome',
+      'verdict.grades',
+      'verdict.cannot_judge as cannotJudge',
+      'verdict.mean',
+      'verdict.spread',
+      'verdict.reason',
+      'run.created_at as at',
+    ])
+    .where('verdict.candidate_id', '=', candidateId)
+    .orderBy('verdict.id')
+    .execute()
+  return rows.map(({ verdictId, outcome, grades, cannotJudge, mean, spread, reason, at, ...rule }) => ({
+    id: verdictId,
+    outcome,
+    grades,
+    cannotJudge,
+    mean,
+    spread,
+    reason,
+    at,
+    rule,
+  }))
+}
+
+/** The newest rows of a moment: together with a rule they fix what a run reads. */
+export async function newestInput(
+  db: Kysely<DB>,
+  campaignId: number,
+): Promise<{ newestGradeId: number; newestCandidateId: number }> {
+  const grade = await db
+    .selectFrom('grade')
+    .select((e) => e.fn.max('id').as('id'))
+    .executeTakeFirst()
+  const candidate = await db
+    .selectFrom('candidate')
+    .select((e) => e.fn.max('id').as('id'))
+    .where('campaign_id', '=', campaignId)
+    .executeTakeFirst()
+  return { newestGradeId: grade?.id ?? 0, newestCandidateId: candidate?.id ?? 0 }
+}
+
+export interface CandidateWithVerdict {
+  id: number
+  outcome: CandidateState | null
+  grades: number | null
+  cannotJudge: number | null
+  mean: number | null
+  spread: number | null
+  reason: string | null
+}
+
+/** A page of a campaign's candidates with their newest verdicts, by id; calibration candidates left out. */
+export async function listCandidatesWithVerdict(
+  db: Kysely<DB>,
+  page: { campaignId: number; after: number; upTo: number; limit: number },
+): Promise<CandidateWithVerdict[]> {
+  return (
+    db
+      .selectFrom('candidate')
+      .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
+      .select([
+        'candidate.id',
+        'verdict.outcome',
+        'verdict.grades',
+        'verdict.cannot_judge as cannotJudge',
+        'verdict.mean',
+        'verdict.spread',
+        'verdict.reason',
+      ])
+      .where('candidate.id', '>', page.after)
+      .where('candidate.id', '<=', page.upTo)
+      // The plus keeps SQLite on the primary key: by an index on the campaign it would sort the whole campaign for each page.
+      .where(sql<boolean>`+candidate.campaign_id = ${page.campaignId}`)
+      .where('candidate.truth', 'is', null)
+      .orderBy('candidate.id')
+      .limit(page.limit)
+      .execute()
+  )
+}
+
+export async function findNewestRun(db: Kysely<DB>, campaignId: number): Promise<Run | null> {
+  const run = await db
+    .selectFrom('run')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return run ?? null
+}
+
+export async function findRuleOfRun(db: Kysely<DB>, runId: number): Promise<Rule> {
+  return db
+    .selectFrom('run')
+    .innerJoin('rule', 'rule.id', 'run.rule_id')
+    .selectAll('rule')
+    .where('run.id', '=', runId)
+    .executeTakeFirstOrThrow()
+}
+
+export async function insertRun(
+  db: Kysely<DB>,
+  run: {
+    campaignId: number
+    ruleId: number
+    inputDigest: string
+    newestGradeId: number
+    newestCandidateId: number
+    summary: RunSummary
+    startedBy: number | null
+    now: IsoTime
+  },
+): Promise<Run> {
+  return db
+    .insertInto('run')
+    .values({
+      campaign_id: run.campaignId,
+      rule_id: run.ruleId,
+      input_digest: run.inputDigest,
+      newest_grade_id: run.newestGradeId,
+      newest_candidate_id: run.newestCandidateId,
+      summary: toJson(run.summary),
+      started_by: run.startedBy,
+      created_at: run.now,
+    })
+    .returningAll()
+    .executeTakeFirstOrThrow()
+}
+
+export interface NewVerdict {
+  candidateId: number
+  outcome: CandidateState
+  grades: number
+  cannotJudge: number
+  mean: number | null
+  spread: number | null
+  reason: string
+}
+
+/** Appends the verdicts and makes them the newest of their candidates. Returns their ids by candidate. */
+export async function insertVerdicts(
+  db: Kysely<DB>,
+  runId: number,
+  verdicts: readonly NewVerdict[],
+): Promise<Map<number, number>> {
+  if (verdicts.length === 0) return new Map()
+  const rows = await db
+    .insertInto('verdict')
+    .values(
+      verdicts.map((verdict) => ({
+        run_id: runId,
+        candidate_id: verdict.candidateId,
+        outcome: verdict.outcome,
+        grades: verdict.grades,
+        cannot_judge: verdict.cannotJudge,
+        mean: verdict.mean,
+        spread: verdict.spread,
+        probability: null,
+        reason: verdict.reason,
+      })),
+    )
+    .returning(['id', 'candidate_id'])
+    .execute()
+  const ids = rows.map((row) => row.id)
+  await db
+    .updateTable('candidate')
+    .from('verdict')
+    .set((e) => ({ verdict_id: e.ref('verdict.id') }))
+    .whereRef('verdict.candidate_id', '=', 'candidate.id')
+    .where('verdict.id', '>=', Math.min(...ids))
+    .where('verdict.id', '<=', Math.max(...ids))
+    .where('verdict.run_id', '=', runId)
+    .execute()
+  return new Map(rows.map((row) => [row.candidate_id, row.id]))
+}
+
+export interface CandidateStanding {
+  id: number
+  state: CandidateState
+  raDeg: number | null
+  decDeg: number | null
+  designation: string | null
+  /** A ruling stands over verdicts unless it handed the candidate back. */
+  ruled: boolean
+}
+
+export async function listStandings(db: Kysely<DB>, candidateIds: readonly number[]): Promise<CandidateStanding[]> {
+  const rows = await db
+    .selectFrom('candidate')
+    .leftJoin('designation', 'designation.candidate_id', 'candidate.id')
+    .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+    .select([
+      'candidate.id',
+      'candidate.state',
+      'candidate.ra_deg as raDeg',
+      'candidate.dec_deg as decDeg',
+      'designation.designation',
+      'ruling.outcome',
+    ])
+    .where(sql<boolean>`candidate.id in (select value from json_each(${JSON.stringify(candidateIds)}))`)
+    .orderBy('candidate.id')
+    .execute()
+  return rows.map(({ outcome, ...row }) => ({ ...row, ruled: outcome !== null && outcome !== 'by verdict' }))
+}
+
+/** Confirmed candidates that had no position when they were confirmed and have one now. */
+export async function listConfirmedToName(db: Kysely<DB>, campaignId: number): Promise<CandidateStanding[]> {
+  const rows = await db
+    .selectFrom('candidate')
+    .leftJoin('designation', 'designation.candidate_id', 'candidate.id')
+    .select(['candidate.id', 'candidate.state', 'candidate.ra_deg as raDeg', 'candidate.dec_deg as decDeg'])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.state', '=', 'confirmed')
+    .where('candidate.ra_deg', 'is not', null)
+    .where('candidate.dec_deg', 'is not', null)
+    .where('designation.candidate_id', 'is', null)
+    .orderBy('candidate.id')
+    .execute()
+  return rows.map((row) => ({ ...row, designation: null, ruled: false }))
+}
+
+export interface StateWrite {
+  candidateId: number
+  from: CandidateState
+  to: CandidateState
+  /** What the state rests on from now. */
+  restsOn: { cause: StateCause; id: number }
+  /** What made it change. */
+  changedBy: { cause: StateCause; id: number }
+}
+
+/** Writes states with their causes; where the state differs, the change and the catalogue's entry with it. */
+export async function writeStates(
+  db: Kysely<DB>,
+  campaignId: number,
+  writes: readonly StateWrite[],
+  now: IsoTime,
+): Promise<void> {
+  if (writes.length === 0) return
+  const changes = writes.filter((write) => write.from !== write.to)
+  await sql`
+    update candidate set
+      state = w.value ->> 'to',
+      state_cause = w.value ->> 'cause',
+      state_cause_id = w.value ->> 'causeId',
+      state_since = case when state = w.value ->> 'to' then state_since else ${now} end
+    from json_each(${JSON.stringify(
+      writes.map((w) => ({ id: w.candidateId, to: w.to, cause: w.restsOn.cause, causeId: w.restsOn.id })),
+    )}) w
+    where candidate.id = w.value ->> 'id'`.execute(db)
+  if (changes.length === 0) return
+  await db
+    .insertInto('state_change')
+    .values(
+      changes.map((change) => ({
+        candidate_id: change.candidateId,
+        from_state: change.from,
+        to_state: change.to,
+        cause: change.changedBy.cause,
+        cause_id: change.changedBy.id,
+        at: now,
+      })),
+    )
+    .execute()
+  const moves = changes.filter((change) => change.from === 'confirmed' || change.to === 'confirmed')
+  if (moves.length === 0) return
+  await db
+    .insertInto('entry')
+    .values(
+      moves.map((move) => ({
+        campaign_id: campaignId,
+        candidate_id: move.candidateId,
+        event: move.to === 'confirmed' ? ('entered' as const) : ('left' as const),
+        cause: move.changedBy.cause,
+        cause_id: move.changedBy.id,
+        at: now,
+      })),
+    )
+    .execute()
+}
+
+/** Which of the names the campaign has given already. */
+export async function listTakenDesignations(
+  db: Kysely<DB>,
+  campaignId: number,
+  names: readonly string[],
+): Promise<Set<string>> {
+  const rows = await db
+    .selectFrom('designation')
+    .select('designation')
+    .where('campaign_id', '=', campaignId)
+    .where(sql<boolean>`designation in (select value from json_each(${JSON.stringify(names)}))`)
+    .execute()
+  return new Set(rows.map((row) => row.designation))
+}
+
+export async function insertDesignations(
+  db: Kysely<DB>,
+  campaignId: number,
+  named: readonly { candidateId: number; designation: string }[],
+  now: IsoTime,
+): Promise<void> {
+  if (named.length === 0) return
+  await db
+    .insertInto('designation')
+    .values(
+      named.map(({ candidateId, designation }) => ({
+        candidate_id: candidateId,
+        campaign_id: campaignId,
+        designation,
+        given_at: now,
+      })),
+    )
+    .execute()
+}

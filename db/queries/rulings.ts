@@ -1,0 +1,126 @@
+import type { Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { Ruling, RulingOutcome, StateChange } from '../schema/consensus'
+import type { CandidateState } from '../schema/intake'
+import type { IsoTime } from '../schema/values'
+
+export interface RulingWithName extends Ruling {
+  name: string
+  pseudonym: string | null
+}
+
+/** Every ruling on a candidate, newest first. */
+export async function listRulingsOf(db: Kysely<DB>, candidateId: number): Promise<RulingWithName[]> {
+  return db
+    .selectFrom('ruling')
+    .innerJoin('candidate', 'candidate.id', 'ruling.candidate_id')
+    .innerJoin('person', 'person.id', 'ruling.person_id')
+    .leftJoin('membership', (join) =>
+      join
+        .onRef('membership.person_id', '=', 'ruling.person_id')
+        .onRef('membership.campaign_id', '=', 'candidate.campaign_id'),
+    )
+    .selectAll('ruling')
+    .select(['person.name', 'membership.pseudonym'])
+    .where('ruling.candidate_id', '=', candidateId)
+    .orderBy('ruling.id', 'desc')
+    .execute()
+}
+
+/** Appends the ruling and makes it the candidate's newest. */
+export async function insertRuling(
+  db: Kysely<DB>,
+  ruling: {
+    candidateId: number
+    personId: number
+    outcome: RulingOutcome
+    grade: 'A' | 'B' | 'C' | null
+    reason: string
+    now: IsoTime
+  },
+): Promise<number> {
+  const { id } = await db
+    .insertInto('ruling')
+    .values({
+      candidate_id: ruling.candidateId,
+      person_id: ruling.personId,
+      outcome: ruling.outcome,
+      grade: ruling.grade,
+      reason: ruling.reason,
+      created_at: ruling.now,
+    })
+    .returning('id')
+    .executeTakeFirstOrThrow()
+  await db.updateTable('candidate').set({ ruling_id: id }).where('id', '=', ruling.candidateId).execute()
+  return id
+}
+
+/** Every change of a candidate's state, oldest first. */
+export async function listStateChanges(db: Kysely<DB>, candidateId: number): Promise<StateChange[]> {
+  return db.selectFrom('state_change').selectAll().where('candidate_id', '=', candidateId).orderBy('id').execute()
+}
+
+export interface SplitRow {
+  id: number
+  name: string
+  mean: number | null
+  spread: number | null
+  grades: number | null
+  since: IsoTime
+}
+
+/**
+ * A campaign's splits, those most likely to be lenses first: by mean, highest first, then by spread, widest first. Splits
+ * without a grade come last.
+ */
+export async function listSplits(db: Kysely<DB>, campaignId: number, limit: number): Promise<SplitRow[]> {
+  return db
+    .selectFrom('candidate')
+    .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
+    .select([
+      'candidate.id',
+      'candidate.name',
+      'candidate.state_since as since',
+      'verdict.mean',
+      'verdict.spread',
+      'verdict.grades',
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.state', '=', 'split')
+    .orderBy('verdict.mean', (order) => order.desc().nullsLast())
+    .orderBy('verdict.spread', 'desc')
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
+}
+
+export interface RecentRuling {
+  candidateId: number
+  name: string
+  outcome: RulingOutcome
+  grade: 'A' | 'B' | 'C' | null
+  state: CandidateState
+  by: string
+  at: IsoTime
+}
+
+/** The candidates that were ruled on last, each once with its newest ruling, newest first. */
+export async function listRecentRulings(db: Kysely<DB>, campaignId: number, limit: number): Promise<RecentRuling[]> {
+  return db
+    .selectFrom('candidate')
+    .innerJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+    .innerJoin('person', 'person.id', 'ruling.person_id')
+    .select([
+      'candidate.id as candidateId',
+      'candidate.name',
+      'candidate.state',
+      'ruling.outcome',
+      'ruling.grade',
+      'person.name as by',
+      'ruling.created_at as at',
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .orderBy('candidate.ruling_id', 'desc')
+    .limit(limit)
+    .execute()
+}

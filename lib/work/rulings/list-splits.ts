@@ -1,0 +1,54 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { countCandidates } from '@/db/queries/campaigns'
+import { countVotes } from '@/db/queries/consensus'
+import { listRecentRulings, listSplits, type RecentRuling } from '@/db/queries/rulings'
+import type { DB } from '@/db/schema'
+import type { GradeLetter } from '@/db/schema/grading'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { picturesOf, type PictureView } from '@/lib/work/stamps/candidate-pictures'
+
+export interface SplitCase {
+  id: number
+  name: string
+  mean: number | null
+  spread: number | null
+  votes: Record<GradeLetter, number>
+  picture: PictureView | null
+}
+
+export interface Splits {
+  /** Of the whole campaign; `cases` holds the first of them. */
+  total: number
+  cases: SplitCase[]
+  /** Candidates that were ruled on last, newest first. */
+  ruled: RecentRuling[]
+}
+
+export const MOST_CASES = 200
+const MOST_RULED = 8
+
+/** The splits that wait for a lead, highest mean first, and what was ruled last. */
+export async function listSplitCases(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<Splits> {
+  const { campaign } = permit
+  const rows = await listSplits(db, campaign.id, MOST_CASES)
+  const ids = rows.map((row) => row.id)
+  const [counts, votes, pictures, ruled] = await Promise.all([
+    countCandidates(db, campaign.id),
+    countVotes(db, ids),
+    picturesOf(db, campaign, ids),
+    listRecentRulings(db, campaign.id, MOST_RULED),
+  ])
+  return {
+    total: counts.split,
+    ruled,
+    cases: rows.map(({ id, name, mean, spread }) => ({
+      id,
+      name,
+      mean,
+      spread,
+      votes: votes.get(id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 },
+      picture: pictures.get(id)?.views.find((view) => view.url !== null) ?? null,
+    })),
+  }
+}

@@ -1,0 +1,89 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { findCandidate } from '@/db/queries/candidates'
+import { listVerdictsOf } from '@/db/queries/consensus'
+import { insertRuling, listRulingsOf } from '@/db/queries/rulings'
+import type { DB } from '@/db/schema'
+import type { Candidate, CandidateState } from '@/db/schema/intake'
+import { recordEvent } from '@/lib/platform/audit/record-event'
+import { isoTime } from '@/lib/platform/clock'
+import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { applyStates, type StateOutcome } from '@/lib/work/consensus/apply-state'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { RulingInput } from './ruling-input'
+
+export interface RulingAnswer {
+  rulingId: number
+  state: CandidateState
+}
+
+/**
+ * A lead decides a candidate. The ruling is appended and stands over every verdict until a newer ruling; 'by verdict' steps
+ * back, and the newest verdict holds again. State, change, catalogue and audit event are written with it or not at all.
+ * @throws Problem 404 no such candidate here; 409 `calibration`, `ruled-meanwhile`, `no-ruling`. ZodError on bad input.
+ */
+export async function ruleOnCandidate(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  candidateId: number,
+  input: RulingInput,
+): Promise<RulingAnswer> {
+  const ruling = RulingInput.parse(input)
+  return db.transaction().execute(async (transaction) => {
+    const candidate = await findCandidate(transaction, permit.campaign.id, candidateId)
+    if (!candidate) throw notFound('candidate')
+    await assertCanRule(transaction, candidate, ruling)
+    const now = isoTime()
+    const { outcome, grade, reason } = ruling
+    const personId = permit.viewer.id
+    const rulingId = await insertRuling(transaction, { candidateId, personId, outcome, grade, reason, now })
+    const result = await outcomeOf(transaction, candidate, ruling, rulingId)
+    await applyStates(transaction, permit.campaign, [result], now)
+    await recordEvent(transaction, {
+      personId,
+      campaignId: permit.campaign.id,
+      action: 'rulings.ruled',
+      subject: candidate.name,
+      detail: { ruling: rulingId, outcome, grade, from: candidate.state, to: result.state },
+    })
+    return { rulingId, state: result.state }
+  })
+}
+
+async function assertCanRule(db: Kysely<DB>, candidate: Candidate, ruling: RulingInput): Promise<void> {
+  if (candidate.truth !== null) {
+    throw conflict(
+      'calibration',
+      `${candidate.name} is a calibration stamp: its truth is known, so it is never ruled on.`,
+    )
+  }
+  const newest = (await listRulingsOf(db, candidate.id)).at(0)
+  if (ruling.lastRulingSeen !== undefined && ruling.lastRulingSeen !== (newest?.id ?? null)) {
+    const who = newest ? `${newest.name} has ruled on ${candidate.name}` : `The rulings on ${candidate.name} changed`
+    throw conflict('ruled-meanwhile', `${who} meanwhile. Read that ruling, then rule again if it should not stand.`)
+  }
+  if (ruling.outcome === 'by verdict' && (!newest || newest.outcome === 'by verdict')) {
+    throw conflict(
+      'no-ruling',
+      `No ruling stands on ${candidate.name}, so there is nothing to hand back to the verdict.`,
+    )
+  }
+}
+
+async function outcomeOf(
+  db: Kysely<DB>,
+  candidate: Candidate,
+  ruling: RulingInput,
+  rulingId: number,
+): Promise<StateOutcome> {
+  const byRuling = { cause: 'ruling' as const, id: rulingId }
+  if (ruling.outcome !== 'by verdict') return { candidateId: candidate.id, state: ruling.outcome, restsOn: byRuling }
+  const verdict = (await listVerdictsOf(db, candidate.id)).at(-1)
+  if (!verdict) return { candidateId: candidate.id, state: 'open', restsOn: byRuling }
+  return {
+    candidateId: candidate.id,
+    state: verdict.outcome,
+    restsOn: { cause: 'verdict', id: verdict.id },
+    changedBy: byRuling,
+  }
+}
