@@ -1,6 +1,6 @@
 /**
- * Reads the simplest FITS images (one header unit, big-endian, no scaling) of fixtures/stretch. Small on purpose, so that
- * the tests of this room stand on nothing but themselves.
+ * Reads the simplest FITS images (one header unit, big-endian, no scaling) of fixtures/stretch. Small on purpose, so
+ * that the tests of this room stand on nothing but themselves.
  */
 import { readFileSync } from 'node:fs'
 import path from 'node:path'

@@ -2,8 +2,8 @@
  * Colour composite of three images that keeps hue: R. Lupton et al., PASP 116, 133 (2004).
  *   I = (r + g + b) / 3,  factor = slope asinh(I Q / stretch) / I,  slope = 25.5 / asinh(0.1 Q)
  * so an intensity of 0.1 stretch becomes 25.5 of 255. A pixel with a channel of 255 or more is scaled down as a whole.
- * This is the convention of astropy's `make_lupton_rgb` (5.2), not the paper's own alpha and Q. Counts are truncated, not
- * rounded. |Q| below 2^-23 is taken as 0.1, above 1e10 as 1e10.
+ * This is the convention of astropy's `make_lupton_rgb` (5.2), not the paper's own alpha and Q. Counts are truncated,
+ * not rounded. |Q| below 2^-23 is taken as 0.1, above 1e10 as 1e10.
  */
 export interface LuptonOptions {
   /** Value that becomes black, one for all channels or one each for r, g, b. */
@@ -61,8 +61,8 @@ function asinhOfPositive(x: number): number {
 }
 
 /**
- * The (stretch, Q) at which `luptonRgb` is linear below `softening` and reaches 255 at the intensity `white` (both above
- * the minimum, same unit): asinh(white Q / stretch) slope = 255 with stretch = softening Q gives
+ * The (stretch, Q) at which `luptonRgb` is linear below `softening` and reaches 255 at the intensity `white` (both
+ * above the minimum, same unit): asinh(white Q / stretch) slope = 255 with stretch = softening Q gives
  *   Q = 10 sinh( asinh(white / softening) / 10 ).
  * @param white, softening above 0.
  */

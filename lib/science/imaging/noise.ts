@@ -2,9 +2,9 @@
  * Sky level and sky noise of a cutout with a galaxy in the middle.
  *
  * Light only ever adds, so the faint side of the pixel histogram is the sky's own: the level comes from the clipped
- * histogram by the mode estimate 2.5 median - 1.5 mean (E. Bertin & S. Arnouts, A&AS 117, 393 (1996), section 3), the noise
- * from the pixels below it. The central disc is left out where enough pixels remain. One pass over the pixels: all else
- * works on the histogram.
+ * histogram by the mode estimate 2.5 median - 1.5 mean (E. Bertin & S. Arnouts, A&AS 117, 393 (1996), section 3), the
+ * noise from the pixels below it. The central disc is left out where enough pixels remain. One pass over the pixels:
+ * all else works on the histogram.
  */
 import { medianAbsoluteDeviationSigma } from './mad'
 import { selectMedian } from './selection'
@@ -26,12 +26,13 @@ const CUT_SPREAD = 0.98658
 /** Radius of the disc left out, as a share of the shorter side. */
 const CENTRE_SHARE = 0.3
 
+/** Scratch of one call, kept to spare an allocation; emptied at each use. */
 const histogram = new Uint32Array(BINS)
 
 /**
  * @param plane width x height pixels, row by row; pixels that are not finite do not count.
- * Never throws. Measured on 80 x 80 simulated pixels: noise within 3 %; level within 0.05 sigma, and 0.2 sigma high where a
- * galaxy's wings reach the edge.
+ * Never throws. Measured on 80 x 80 simulated pixels: noise within 5 %; level within 0.05 sigma, and 0.2 sigma high
+ * where a galaxy's wings reach the edge.
  */
 export function estimateNoise(plane: Float32Array, width: number, height: number): Noise {
   const values = new Float32Array(plane.length)

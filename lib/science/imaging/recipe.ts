@@ -70,7 +70,7 @@ export function defaultRecipe(bands: string[]): Recipe {
       softeningSigma: 3,
       whitePercentile: 99.5,
       leastWhiteSigma: 25,
-      mostWhiteSigma: 150,
+      mostWhiteSigma: 300,
       smooth: true,
     },
     band: { blackSigma: -1.5, softeningSigma: 4, whitePercentile: 99.7, leastWhiteSigma: 15, mostWhiteSigma: 300 },

@@ -1,4 +1,7 @@
-/** One noise-normalised plane as a grey picture: black and white points, asinh between them (Lupton et al. 1999, AJ 118, 1406). */
+/**
+ * One noise-normalised plane as a grey picture: black and white points, asinh between them (Lupton et al. 1999, AJ 118,
+ * 1406).
+ */
 import type { LimitsSigma } from './recipe'
 import { whiteLevel } from './white-level'
 
@@ -29,7 +32,8 @@ export function renderGrey(values: Float32Array, width: number, height: number, 
 }
 
 /**
- * Greys of the steps, worked out backwards: grey k begins where 255 y = k - 1/2, at x = a sinh((k - 1/2) / 255 asinh(1 / a)).
+ * Greys of the steps, worked out backwards: grey k begins where 255 y = k - 1/2, which is at
+ *   x = a sinh((k - 1/2) / 255 asinh(1 / a)).
  * The curve is steepest at black, so the table has 16 times more entries than the picture has greys.
  */
 function brightnessTable(softening: number): Uint8Array {

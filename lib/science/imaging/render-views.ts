@@ -25,8 +25,8 @@ export interface RenderedView {
 
 /**
  * The recipe's views that these planes allow, in the recipe's order.
- * @param planes shortest wavelength first, row 0 = bottom. Bands may differ in size: each keeps its own band view, colour
- *   and deep are made of the largest group of equal size.
+ * @param planes shortest wavelength first, row 0 = bottom. Bands may differ in size: each keeps its own band view, while
+ *   colour and deep are made of the largest group of equal size.
  * @returns an empty list for no planes. Never throws when each plane has width x height pixels, at least one.
  */
 export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[] {

@@ -1,6 +1,7 @@
 /**
- * Binomial smoothing over 3 by 3 pixels, kernel (1 2 1) x (1 2 1) / 16, edges repeated. Independent noise falls to 3/8 of
- * its size. The result is multiplied by `gain`. Missing (NaN) pixels spread to their neighbours, so replace them first.
+ * Binomial smoothing over 3 by 3 pixels, kernel (1 2 1) x (1 2 1) / 16, edges repeated. Independent noise falls to 3/8
+ * of its size. The result is multiplied by `gain`. Missing (NaN) pixels spread to their neighbours, so replace them
+ * first.
  */
 export function smoothBinomial(values: Float32Array, width: number, height: number, gain = 1): Float32Array {
   const rows = new Float32Array(values.length)

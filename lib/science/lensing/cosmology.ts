@@ -2,8 +2,9 @@
  * Distances and ages in a flat universe of matter, a cosmological constant and, where given, photons and neutrinos.
  *   E(z)^2 = Om (1+z)^3 + Og (1+z)^4 (1 + n(z)) + OL,   OL = 1 - Om - Og (1 + n(0))
  *   D_C = c/H0 integral_0^z dz'/E     D_A(z1, z2) = (D_C(z2) - D_C(z1)) / (1 + z2)     D_L = (1 + z) D_C
- * Sources: D. W. Hogg, arXiv:astro-ph/9905116, equations 14 to 19 and 21; n(z), the neutrino density over the photons', is
- * the fit of E. Komatsu et al., ApJS 192, 18 (2011), section 3.3, with the power 1.83 that astropy uses, good to 0.1 %.
+ * Sources: D. W. Hogg, arXiv:astro-ph/9905116, equations 14 to 19 and 21; n(z), the neutrino density over the photons',
+ * is the fit of E. Komatsu et al., ApJS 192, 18 (2011), section 3.3, with the power 1.83 that astropy uses, good to 0.1
+ * %.
  */
 import { SPEED_OF_LIGHT_KM_S } from './constants'
 import { integrate } from './integrate'
@@ -111,8 +112,8 @@ export function angularDiameterDistanceMpc(cosmology: Cosmology, z: number): num
 }
 
 /**
- * Angular diameter distance in Mpc from redshift `zFront` to `zBehind`. It is not the difference of two angular diameter
- * distances. Negative when `zBehind` lies in front.
+ * Angular diameter distance in Mpc from redshift `zFront` to `zBehind`. It is not the difference of two angular
+ * diameter distances. Negative when `zBehind` lies in front.
  */
 export function angularDiameterDistanceBetweenMpc(cosmology: Cosmology, zFront: number, zBehind: number): number {
   return comovingBetween(cosmology, zFront, zBehind) / (1 + zBehind)

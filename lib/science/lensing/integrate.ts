@@ -1,6 +1,7 @@
 /**
  * Gauss-Legendre quadrature of a smooth function, in panels of at most half a unit with 12 nodes each: exact for
- * polynomials of degree 23. Nodes by Newton's method on the Legendre polynomial (M. Abramowitz & I. Stegun 1972, 25.4.29).
+ * polynomials of degree 23. Nodes by Newton's method on the Legendre polynomial (M. Abramowitz & I. Stegun 1972,
+ * 25.4.29).
  */
 const NODE_COUNT = 12
 const PANEL = 0.5

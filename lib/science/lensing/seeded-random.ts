@@ -1,6 +1,6 @@
 /**
- * Seeded random numbers: xoshiro128** 1.1 of D. Blackman & S. Vigna (2018; ACM TOMS 47, 36 (2021)), placed by its authors
- * in the public domain (prng.di.unimi.it), its state filled from the seed by splitmix32. Not for secrets.
+ * Seeded random numbers: xoshiro128** 1.1 of D. Blackman & S. Vigna (2018; ACM TOMS 47, 36 (2021)), placed by its
+ * authors in the public domain (prng.di.unimi.it), its state filled from the seed by splitmix32. Not for secrets.
  */
 import { logGamma } from './log-gamma'
 
@@ -11,7 +11,7 @@ export class SeededRandom {
   /** @param seed whole number; equal seeds give equal sequences. Digits beyond 32 bits count too. */
   constructor(seed: number) {
     const high = Math.floor(seed / 2 ** 32) | 0
-    this.state = splitmix32((seed ^ Math.imul(high, 0x9e3779b1)) | 0)
+    this.state = splitmix32((seed | 0) ^ finalise(high))
   }
 
   /** A generator that starts from the four given words, not all zero. */
@@ -75,8 +75,8 @@ export class SeededRandom {
   }
 
   /**
-   * Poisson with the given mean, 0 for a mean of 0 or less. Below 10 by multiplication (D. Knuth, TAOCP 2, 3.4.1), above
-   * by transformed rejection, algorithm PTRS of W. Hoermann, Insurance: Mathematics and Economics 12, 39 (1993).
+   * Poisson with the given mean, 0 for a mean of 0 or less. Below 10 by multiplication (D. Knuth, TAOCP 2, 3.4.1),
+   * above by transformed rejection, algorithm PTRS of W. Hoermann, Insurance: Mathematics and Economics 12, 39 (1993).
    */
   poisson(mean: number): number {
     if (!(mean > 0)) return 0
@@ -116,16 +116,24 @@ function rotateLeft(word: number, bits: number): number {
   return (word << bits) | (word >>> (32 - bits))
 }
 
-/** G. Steele, D. Lea & C. Flood, OOPSLA 2014, in 32 bits with the finaliser of MurmurHash3 (A. Appleby, public domain). */
+/**
+ * Finaliser of MurmurHash3 (A. Appleby, public domain): every bit of the input reaches every bit of the output; 0 stays
+ * 0.
+ */
+function finalise(word: number): number {
+  let z = word
+  z = Math.imul(z ^ (z >>> 16), 0x85ebca6b)
+  z = Math.imul(z ^ (z >>> 13), 0xc2b2ae35)
+  return z ^ (z >>> 16)
+}
+
+/** G. Steele, D. Lea & C. Flood, OOPSLA 2014, in 32 bits. */
 function splitmix32(seed: number): Uint32Array {
   const words = new Uint32Array(4)
   let state = seed | 0
   for (let k = 0; k < 4; k++) {
     state = (state + 0x9e3779b9) | 0
-    let z = state
-    z = Math.imul(z ^ (z >>> 16), 0x85ebca6b)
-    z = Math.imul(z ^ (z >>> 13), 0xc2b2ae35)
-    words[k] = (z ^ (z >>> 16)) >>> 0
+    words[k] = finalise(state)
   }
   return words
 }

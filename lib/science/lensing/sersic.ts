@@ -18,7 +18,10 @@ export interface SersicProfile {
   y: number
 }
 
-/** b_n of the profile: relative error below 1e-6 for n >= 0.5; do not use below 0.36. */
+/**
+ * b_n of the profile; do not use below n = 0.36. Measured against the root of gamma(2n, b) = Gamma(2n) / 2: relative
+ * error 3e-5 at n = 1, the worst above 1, and 7e-8 at n = 4.
+ */
 export function sersicB(n: number): number {
   return (
     2 * n - 1 / 3 + 4 / (405 * n) + 46 / (25515 * n ** 2) + 131 / (1148175 * n ** 3) - 2194697 / (30690717750 * n ** 4)
@@ -32,7 +35,9 @@ export function sersicTotalLight(effectiveRadiusArcsec: number, index: number, a
   return 2 * Math.PI * axisRatio * effectiveRadiusArcsec ** 2 * index * shape
 }
 
-/** The brightness (x, y) -> 1 / arcsec^2 of a profile whose total light is 1; elliptical radius sqrt(u^2 + (v / q)^2). */
+/**
+ * The brightness (x, y) -> 1 / arcsec^2 of a profile whose total light is 1; elliptical radius sqrt(u^2 + (v / q)^2).
+ */
 export function sersicBrightness(profile: SersicProfile): (x: number, y: number) => number {
   const { effectiveRadiusArcsec, index, axisRatio, positionAngleDeg } = profile
   if (!(index >= 0.36)) throw new RangeError(`A Sersic index below 0.36 is out of range of b_n: ${index}.`)

@@ -1,11 +1,12 @@
 /**
  * Singular isothermal ellipsoid: R. Kormann, P. Schneider & M. Bartelmann, A&A 284, 285 (1994), section 2.
  *
- * Convention. f is the axis ratio minor / major of the lines of equal surface density. In the lens frame x2 lies along the
- * MAJOR axis and x1 along the minor one. Normalised to the "intermediate axis":
+ * Convention. f is the axis ratio minor / major of the lines of equal surface density. In the lens frame x2 lies along
+ * the MAJOR axis and x1 along the minor one. Normalised to the "intermediate axis":
  *   kappa = sqrt(f) b / (2 sqrt(x1^2 + f^2 x2^2))
  * so that the critical curve (kappa = 1/2) encloses the area pi b^2: b is the circularised Einstein radius, and
- * b = 4 pi (sigma / c)^2 D_ls / D_s. Position angle of the major axis in degrees from north through east. Angles in arcsec.
+ * b = 4 pi (sigma / c)^2 D_ls / D_s. Position angle of the major axis in degrees from north through east. Angles in
+ * arcsec.
  *   alpha1 = b sqrt(f)/f' asinh(f'/f cos phi),  alpha2 = b sqrt(f)/f' asin(f' sin phi),  f' = sqrt(1 - f^2)
  * with phi the polar angle from x1: the deflection does not depend on the distance.
  */
@@ -22,7 +23,9 @@ export interface EllipsoidLens {
   centre?: SkyVector
 }
 
-/** Below this ellipticity 1 - f the deflection differs from the sphere's by less than 1e-6 b, and f' would lose digits. */
+/**
+ * Below this ellipticity 1 - f the deflection differs from the sphere's by less than 1e-6 b, and f' would lose digits.
+ */
 const ROUND = 1e-6
 
 interface Frame {

@@ -13,32 +13,15 @@ import {
   composeRingGalaxy,
   composeSpiral,
 } from './simulator/galaxy-scenes'
-import { composeLens, type LensKind } from './simulator/lens-scenes'
+import { SIMULATED_KINDS, type ImpostorKind, type SimulatedKind } from './simulator/kinds'
+import { composeLens } from './simulator/lens-scenes'
 import { addPoints, blurredScene, recordCutout } from './simulator/observe-scene'
 import { Scene } from './simulator/scene'
 import { SALTMARSH_WIDE_SURVEY, type SurveyModel } from './survey-model'
 
 export type { SurveyModel } from './survey-model'
 
-export type ImpostorKind =
-  'spiral' | 'ring-galaxy' | 'merger' | 'edge-on' | 'star-spikes' | 'satellite-trail' | 'elliptical'
-
-export type SimulatedKind = LensKind | ImpostorKind
-
-export const SIMULATED_KINDS: readonly SimulatedKind[] = [
-  'lens-arc',
-  'lens-ring',
-  'lens-quad',
-  'lens-double',
-  'lens-group',
-  'spiral',
-  'ring-galaxy',
-  'merger',
-  'edge-on',
-  'star-spikes',
-  'satellite-trail',
-  'elliptical',
-]
+export { SIMULATED_KINDS, type ImpostorKind, type SimulatedKind } from './simulator/kinds'
 
 export interface SimulatedCandidate {
   kind: SimulatedKind
@@ -51,8 +34,8 @@ export interface SimulatedCandidate {
   /** Of the main lens, circularised; null for what is not a lens. */
   einsteinRadiusArcsec: number | null
   /**
-   * 0 easy to 1 hard. For a lens by the signal-to-noise of the lensed light against the lens galaxy's; for anything else
-   * by how often its kind is taken for a lens (our own guess, no source).
+   * 0 easy to 1 hard. For a lens by the signal-to-noise of the lensed light against the lens galaxy's; for anything
+   * else by how often its kind is taken for a lens (our own guess, no source).
    */
   difficulty: number
 }

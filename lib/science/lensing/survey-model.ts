@@ -24,9 +24,9 @@ export interface SurveyModel {
 }
 
 /**
- * The invented Saltmarsh Wide Survey. Sky noise follows from sky surface brightnesses of 22.0, 21.2 and 20.4 mag/arcsec^2
- * and an exposure that gives 5-sigma point sources of about 26.2, 25.8 and 25.4 mag: a 4-m class wide survey (common
- * practice, no source).
+ * The invented Saltmarsh Wide Survey. Sky noise follows from sky surface brightnesses of 22.0, 21.2 and 20.4
+ * mag/arcsec^2 and an exposure that gives 5-sigma point sources of about 26.2, 25.8 and 25.4 mag: a 4-m class wide
+ * survey (common practice, no source).
  */
 export const SALTMARSH_WIDE_SURVEY: SurveyModel = {
   name: 'Saltmarsh Wide Survey',

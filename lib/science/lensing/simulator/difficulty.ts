@@ -1,18 +1,18 @@
 /** How hard a simulated candidate is to judge, 0 to 1. */
-import type { ImpostorKind } from '../simulate-candidate'
 import type { SeededRandom } from '../seeded-random'
+import type { ImpostorKind } from './kinds'
 import { blurredScene } from './observe-scene'
 import type { Scene } from './scene'
 
 /** Lens light is never known better than this share of itself, so arcs drown in it whatever the exposure. */
 const LENS_LIGHT_DOUBT = 0.08
-const HARD_AT = 12
-const EASY_AT = 250
+const HARD_AT = 15
+const EASY_AT = 400
 
 /**
  * Signal-to-noise of the lensed light in the shortest band, where it stands out best, optimally weighted over pixels:
  *   S/N^2 = sum arc^2 / (sky^2 + (arc + lens) / gain + (0.08 lens)^2)
- * 1 at S/N 12 and below, 0 at 250 and above, straight in the logarithm between (our own scale).
+ * 1 at S/N 15 and below, 0 at 400 and above, straight in the logarithm between (our own scale).
  */
 export function arcDifficulty(scene: Scene): number {
   const { skyNoise, electronsPerFlux } = scene.survey.bands[0]

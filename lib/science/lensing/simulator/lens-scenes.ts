@@ -1,11 +1,12 @@
-/** The five kinds of lens: a Sersic source traced through ellipsoids and shear, behind the light of the lens galaxies. */
+/**
+ * The five kinds of lens: a Sersic source traced through ellipsoids and shear, behind the light of the lens galaxies.
+ */
 import { sersicBrightness } from '../sersic'
 import { sieDeflector, type EllipsoidLens } from '../sie'
 import type { SeededRandom } from '../seeded-random'
 import { distantBlueColour, magnitudesOf, quiescentColour, type Colour } from './colours'
+import type { LensKind } from './kinds'
 import type { Brightness, Scene } from './scene'
-
-export type LensKind = 'lens-arc' | 'lens-ring' | 'lens-quad' | 'lens-double' | 'lens-group'
 
 /** Ranges of each kind. Offsets of the source in units of the Einstein radius. */
 interface LensRecipe {
@@ -21,7 +22,7 @@ const RECIPES: Record<LensKind, LensRecipe> = {
     einsteinRadius: [1.2, 2.6],
     sourceOffset: [0.14, 0.4],
     sourceRadius: [0.15, 0.36],
-    sourceMagnitude: [23.0, 25.2],
+    sourceMagnitude: [22.8, 25.0],
     axisRatio: [0.65, 0.95],
   },
   'lens-ring': {
