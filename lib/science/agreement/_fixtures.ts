@@ -51,6 +51,61 @@ interface Fixtures {
     })[]
     other_levels: (Partial<Record<Method, [number, number]>> & { x: number; n: number; level: number })[]
   }
+  'dawid-skene-1979.json': {
+    /** one row a patient; the first three columns are observer 1's */
+    ratings: number[][]
+    published: { class_marginals: number[]; error_rates: number[][][]; posteriors: number[][]; hard_classes: number[] }
+    fit: {
+      log_likelihood: number
+      iterations_to_posterior_change_below_1e_10: number
+      class_marginals: number[]
+      error_rates: number[][][]
+      posteriors: number[][]
+    }
+    tolerance: number
+  }
+  'panel-dawid-skene.json': {
+    iterations_1e_10: number
+    log_likelihood: number
+    class_marginals: number[]
+    confusions: Record<string, number[][]>
+    posteriors: Record<string, number[]>
+  }
+  'sequential-bayes.json': {
+    examples: {
+      name: string
+      prior: number
+      votes: { tpr: number; fpr: number; vote: 'yes' | 'no' | null }[]
+      posterior: number
+      log_odds: number | null
+      steps: number[]
+    }[]
+  }
+  'gwet-ac.json': {
+    sets: {
+      name: string
+      categories?: number[]
+      ratings?: Ratings
+      table?: number[][]
+      published: { ac1?: number; ac2_quadratic?: number }
+      values: Partial<Record<'identity' | 'linear' | 'quadratic', { ac: number; pa: number; pe: number }>>
+    }[]
+  }
+  'roc-calibration.json': {
+    label: number[]
+    score: number[]
+    auc: number
+    roc_points: { threshold: (number | null)[]; fpr: number[]; tpr: number[] }
+    brier: number
+    log_loss_natural: number
+    calibration_5_uniform_bins: Record<
+      'right_closed' | 'left_closed',
+      {
+        bins: { count: number; mean_predicted: number; fraction_positive: number }[]
+        expected_calibration_error: number
+      }
+    >
+  }
   'vote-vectors.json': { vectors: { name: string; counts: number[]; mean: number; population_sd: number }[] }
   'panel.json': {
     krippendorff_alpha: Record<Metric | 'pairable', number>
@@ -67,4 +122,10 @@ export function readPanel(): { raters: string[]; ratings: Ratings } {
   const lines = readFileSync('fixtures/agreement/panel-ratings.csv', 'utf8').trim().split(/\r?\n/)
   const [header, ...rows] = lines.map((line) => line.split(',').slice(1))
   return { raters: header, ratings: rows.map((row) => row.map((cell) => (cell === '' ? null : Number(cell)))) }
+}
+
+/** The classes from which the panel was drawn, item by item. */
+export function readPanelTruth(): number[] {
+  const lines = readFileSync('fixtures/agreement/panel-truth.csv', 'utf8').trim().split(/\r?\n/)
+  return lines.slice(1).map((line) => Number(line.split(',')[1]))
 }

@@ -29,9 +29,10 @@ export interface FleissResult {
 
 /**
  * @param counts one row a subject, one column a category: how many raters chose it. Rows of zeros are left out.
+ * @param multiplicity how often each row occurs, 0 or more; once when left out. For data grouped by like rows.
  * @throws RangeError on rows of unlike length or counts that are not whole and 0 or more.
  */
-export function fleissKappa(counts: readonly ArrayLike<number>[]): FleissResult {
+export function fleissKappa(counts: readonly ArrayLike<number>[], multiplicity?: ArrayLike<number>): FleissResult {
   const categories = counts[0]?.length ?? 0
   const share = new Float64Array(categories)
   let rated = 0
@@ -40,19 +41,20 @@ export function fleissKappa(counts: readonly ArrayLike<number>[]): FleissResult 
   let firstTotal = 0
   let form: FleissResult['form'] = 'equal'
   for (const [subject, row] of counts.entries()) {
+    const times = multiplicity ? multiplicity[subject] : 1
     const total = totalOf(row, subject, categories)
-    if (total === 0) continue
-    rated += 1
-    if (rated === 1) firstTotal = total
+    if (total === 0 || times === 0) continue
+    if (rated === 0) firstTotal = total
+    rated += times
     if (total !== firstTotal) form = 'unequal'
     let agreeing = 0
     for (let k = 0; k < categories; k++) {
-      share[k] += row[k] / total
+      share[k] += (times * row[k]) / total
       agreeing += row[k] * (row[k] - 1)
     }
     if (total < 2) continue
-    subjects += 1
-    agreement += agreeing / (total * (total - 1))
+    subjects += times
+    agreement += (times * agreeing) / (total * (total - 1))
   }
 
   const observed = subjects > 0 ? agreement / subjects : null

@@ -32,6 +32,8 @@ interface Tallies {
   count: Float64Array
   /** value of each category, ascending */
   values: readonly number[]
+  /** how often each unit occurs */
+  times?: ArrayLike<number>
 }
 
 /**
@@ -68,12 +70,14 @@ export function krippendorffAlpha(units: readonly (readonly (number | null)[])[]
  * Alpha from counts, for data too large to hold as ratings.
  * @param counts one row a unit, one column a category: how many raters gave it.
  * @param values the value of each category, ascending.
+ * @param multiplicity how often each row occurs, 0 or more; once when left out. For data grouped by like rows.
  * @throws RangeError on values that do not ascend, rows of another length, or counts that are not whole and 0 or more.
  */
 export function krippendorffAlphaFromCounts(
   counts: readonly ArrayLike<number>[],
   values: readonly number[],
   metric: AlphaMetric,
+  multiplicity?: ArrayLike<number>,
 ): AlphaResult {
   if (!values.every((value, i) => Number.isFinite(value) && (i === 0 || value > values[i - 1]))) {
     throw new RangeError('The values of the categories must be finite and ascend.')
@@ -95,11 +99,11 @@ export function krippendorffAlphaFromCounts(
     }
     start[unit + 1] = entry
   }
-  return alphaOfTallies({ start, category, count, values }, metric)
+  return alphaOfTallies({ start, category, count, values, times: multiplicity }, metric)
 }
 
 function alphaOfTallies(tallies: Tallies, metric: AlphaMetric): AlphaResult {
-  const { start, category, count, values } = tallies
+  const { start, category, count, values, times } = tallies
   const unitCount = start.length - 1
   const ratingsOf = new Float64Array(unitCount)
   const total = new Float64Array(values.length)
@@ -108,9 +112,10 @@ function alphaOfTallies(tallies: Tallies, metric: AlphaMetric): AlphaResult {
   for (let unit = 0; unit < unitCount; unit++) {
     for (let e = start[unit]; e < start[unit + 1]; e++) ratingsOf[unit] += count[e]
     if (ratingsOf[unit] < 2) continue
-    pairableUnits += 1
-    pairableValues += ratingsOf[unit]
-    for (let e = start[unit]; e < start[unit + 1]; e++) total[category[e]] += count[e]
+    const often = times ? times[unit] : 1
+    pairableUnits += often
+    pairableValues += often * ratingsOf[unit]
+    for (let e = start[unit]; e < start[unit + 1]; e++) total[category[e]] += often * count[e]
   }
   const undefinedBecause = (reason: string) => ({ alpha: null, pairableUnits, pairableValues, reason })
   if (pairableUnits === 0) return undefinedBecause('No unit has two ratings, so there is nothing to compare.')
@@ -122,7 +127,8 @@ function alphaOfTallies(tallies: Tallies, metric: AlphaMetric): AlphaResult {
   let observed = 0
   for (let unit = 0; unit < unitCount; unit++) {
     const m = ratingsOf[unit]
-    if (m >= 2) observed += scatter(category, count, start[unit], start[unit + 1], m) / (m - 1)
+    if (m < 2) continue
+    observed += ((times ? times[unit] : 1) * scatter(category, count, start[unit], start[unit + 1], m)) / (m - 1)
   }
   const all = Int32Array.from(values.keys())
   const expected = scatter(all, total, 0, values.length, pairableValues) / (pairableValues - 1)
