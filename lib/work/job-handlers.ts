@@ -1,8 +1,8 @@
 import 'server-only'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import type { JobHandlers } from '@/lib/platform/jobs/run-jobs'
-import { consensusJob } from './consensus/consensus-job'
 import { sendMailJob } from '@/lib/platform/mail/deliver-mail'
+import { consensusJob } from './consensus/consensus-job'
 
 /** Every kind of job and who does it. Rooms add theirs here. */
 export const jobHandlers: JobHandlers = {

@@ -1,0 +1,103 @@
+import { describe, expect, it } from 'vitest'
+import { toJson } from '@/db/schema/values'
+import { giveGrade } from '@/lib/work/consensus/_give-grade'
+import { runConsensus } from '@/lib/work/consensus/run-consensus'
+import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
+import { candidateEvidence } from './candidate-evidence'
+import { listSplitCases } from './list-splits'
+import { ruleOnCandidate } from './rule-on-candidate'
+
+const RULE = { gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 1 }
+
+async function gradedCase() {
+  const scenario = await makeScenario(RULE, 5)
+  const { db, campaign, graders } = scenario
+  const id = await addImagedCandidate(db, campaign, 'torn', { raDeg: 10, decDeg: -5 })
+  const more = { tags: toJson(['merger']), remark: 'Tidal tail?', seconds: 8.5 }
+  await giveGrade(db, campaign, id, graders[0], 'N', more)
+  await giveGrade(db, campaign, id, graders[1], 'A')
+  const first = await giveGrade(db, campaign, id, graders[2], 'N')
+  await giveGrade(db, campaign, id, graders[2], 'A', { replaces: first })
+  await giveGrade(db, campaign, id, graders[2], 'C', { occasion: 'repeat' })
+  const lead = await scenario.permit(scenario.lead, 'lead')
+  await runConsensus(db, lead)
+  return { ...scenario, id, leads: lead }
+}
+
+describe('the evidence of a candidate', () => {
+  it('shows a lead every counted grade with the name, the verdict with its rule, and what caused the state', async () => {
+    const { db, id, leads } = await gradedCase()
+    const { judgement } = await candidateEvidence(db, leads, id)
+    expect(judgement?.votes).toEqual({ A: 2, B: 0, C: 0, N: 1, U: 0 })
+    expect(judgement?.grades.map(({ by, grade }) => `${by} ${grade}`)).toEqual(['dunlin A', 'plover A', 'curlew N'])
+    expect(judgement?.grades[2]).toMatchObject({ tags: ['merger'], remark: 'Tidal tail?', seconds: 8.5 })
+    expect(judgement?.verdict).toMatchObject({ outcome: 'split', mean: 2, rule: { version: 1, confirmMean: 2 } })
+    expect(judgement?.stateReason).toMatch(/^Split: grades A, A, N/)
+    expect(judgement?.history).toMatchObject([{ from: 'open', to: 'split', cause: 'verdict' }])
+  })
+
+  it('gives a viewer pseudonyms, also of the lead who ruled, and no name anywhere', async () => {
+    const { db, id, leads, reader, permit } = await gradedCase()
+    await ruleOnCandidate(db, leads, id, { outcome: 'confirmed', grade: 'B', reason: 'Real.' })
+    const evidence = await candidateEvidence(db, await permit(reader, 'read'), id)
+    expect(evidence.judgement?.grades.map(({ by }) => by)).toEqual(['G03', 'G04', 'G02'])
+    expect(evidence.judgement?.rulings.map(({ by }) => by)).toEqual(['G01'])
+    expect(evidence.judgement).toMatchObject({ stateReason: 'Ruling by G01: confirmed as B. “Real.”' })
+    expect(JSON.stringify(evidence)).not.toMatch(/avocet|curlew|dunlin|plover/)
+    expect(evidence.judgement?.designation).toBe('SWS J004000.00-050000.0')
+  })
+
+  it('is withheld from a grader who has not judged it, and shown with pseudonyms to one who has', async () => {
+    const { db, id, graders, permit } = await gradedCase()
+    const blind = await candidateEvidence(db, await permit(graders[4], 'grade'), id)
+    expect(blind.judgement).toBeNull()
+    expect(JSON.stringify(blind)).not.toMatch(/split|merger|Tidal|mean/)
+    const seen = await candidateEvidence(db, await permit(graders[0], 'grade'), id)
+    expect(seen.judgement?.grades.map(({ by, own }) => [by, own])).toEqual([
+      ['G03', false],
+      ['G04', false],
+      ['G02', true],
+    ])
+  })
+
+  it('never carries the truth of a calibration candidate; that it is one is told to leads only', async () => {
+    const { db, campaign, graders, reader, permit, leads } = await gradedCase()
+    const known = await addImagedCandidate(db, campaign, 'known')
+    await db.updateTable('candidate').set({ truth: 'not a lens' }).where('id', '=', known).execute()
+    await giveGrade(db, campaign, known, graders[0], 'A')
+    const readers = [await permit(reader, 'read'), await permit(graders[0], 'grade')]
+    for (const reads of [leads, ...readers]) {
+      const evidence = await candidateEvidence(db, reads, known)
+      expect(JSON.stringify(evidence)).not.toContain('not a lens')
+      expect(evidence.judgement?.calibration).toBe(reads === leads)
+    }
+  })
+
+  it('is not found in another campaign', async () => {
+    const { db, otherCampaign, leads } = await gradedCase()
+    const there = await addImagedCandidate(db, otherCampaign, 'there')
+    await expect(candidateEvidence(db, leads, there)).rejects.toMatchObject({ status: 404 })
+  })
+})
+
+describe('the list of splits', () => {
+  it('has the highest mean first, with votes, and what was ruled last below', async () => {
+    const { db, campaign, graders, leads, id } = await gradedCase()
+    const low = await addImagedCandidate(db, campaign, 'low')
+    for (const [index, grade] of (['N', 'N', 'A', 'N'] as const).entries()) {
+      await giveGrade(db, campaign, low, graders[index], grade)
+    }
+    await runConsensus(db, leads)
+    const before = await listSplitCases(db, leads)
+    expect(before).toMatchObject({ total: 2, ruled: [] })
+    expect(before.cases.map(({ name, mean }) => [name, mean])).toEqual([
+      ['torn', 2],
+      ['low', 0.75],
+    ])
+    expect(before.cases[1].votes).toEqual({ A: 1, B: 0, C: 0, N: 3, U: 0 })
+    await ruleOnCandidate(db, leads, id, { outcome: 'set aside', grade: null, reason: 'Tail.' })
+    const after = await listSplitCases(db, leads)
+    expect(after.cases.map(({ name }) => name)).toEqual(['low'])
+    expect(after.ruled).toMatchObject([{ name: 'torn', outcome: 'set aside', by: 'avocet', state: 'set aside' }])
+  })
+})
