@@ -1,0 +1,30 @@
+import { chosenOf, readTableState, type TableShape } from '@/components/table/table-state'
+import type { CandidateState } from '@/db/schema/intake'
+import type { CandidateTableInput } from '@/lib/work/catalogue/candidate-table'
+import { CANDIDATE_COLUMNS, CANDIDATE_SORT, UNGRADED, type ColumnsFor } from './candidate-columns'
+
+const ORDERS: Readonly<Record<string, CandidateTableInput['order']>> = {
+  name: 'name',
+  state: 'state',
+  mean: 'mean',
+  spread: 'spread',
+  score: 'score',
+  ra: 'raDeg',
+  dec: 'decDeg',
+}
+
+/** What the address of the table of candidates asks the server for. */
+export function candidateQuery(role: ColumnsFor, search: URLSearchParams, pageSize: number): CandidateTableInput {
+  const shape: TableShape = { columns: CANDIDATE_COLUMNS[role], defaultSort: CANDIDATE_SORT }
+  const { sort, filters, page } = readTableState(shape, search)
+  const chosen = chosenOf(filters.state)
+  const choices = shape.columns.find((column) => column.id === 'state')?.filter ?? []
+  const states = chosen.filter((state) => state !== UNGRADED && choices.includes(state)) as CandidateState[]
+  return {
+    filter: { name: filters.name?.trim(), states, withheld: chosen.includes(UNGRADED) },
+    order: ORDERS[sort[0].id] ?? 'id',
+    descending: sort[0].descending,
+    page,
+    pageSize,
+  }
+}

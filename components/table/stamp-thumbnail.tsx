@@ -1,0 +1,38 @@
+'use client'
+
+import { useState } from 'react'
+import { createPortal } from 'react-dom'
+
+const SIDE = 208
+const GAP = 12
+
+/** A stamp as high as a row, and large beside the pointer while it rests there. */
+export function StampThumbnail({ src, name }: { src: string | null; name: string }) {
+  const [place, setPlace] = useState<{ left: number; top: number } | null>(null)
+  if (!src) return <span className="block size-7 rounded-key bg-tray" title="No picture yet" />
+  const show = (box: DOMRect) =>
+    setPlace({
+      left: Math.min(box.right + GAP, window.innerWidth - SIDE - GAP),
+      top: Math.max(GAP, Math.min(box.top - SIDE / 2, window.innerHeight - SIDE - GAP)),
+    })
+  return (
+    <span
+      className="block size-7 shrink-0 bg-tray"
+      onPointerEnter={(event) => event.pointerType === 'mouse' && show(event.currentTarget.getBoundingClientRect())}
+      onPointerLeave={() => setPlace(null)}
+    >
+      <img src={src} alt="" width={28} height={28} loading="lazy" decoding="async" className="size-7 object-contain" />
+      {place
+        ? createPortal(
+            <img
+              src={src}
+              alt={`Stamp of ${name}`}
+              style={{ ...place, width: SIDE, height: SIDE }}
+              className="pixelated pointer-events-none fixed z-50 rounded-tray border-4 border-tray bg-tray object-contain shadow-xl"
+            />,
+            document.body,
+          )
+        : null}
+    </span>
+  )
+}

@@ -1,0 +1,86 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import {
+  countCandidateSlice,
+  listCandidateSlice,
+  listThumbnails,
+  type CandidateFilter,
+  type CandidateOrder,
+} from '@/db/queries/catalogue'
+import { countVotes } from '@/db/queries/consensus'
+import type { DB } from '@/db/schema'
+import type { GradeLetter } from '@/db/schema/grading'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
+import { candidateScope } from './candidate-scope'
+import { asListed, type ListedCandidate } from './list-candidates'
+
+export interface CandidateTableRow extends ListedCandidate {
+  /** null while withheld */
+  votes: Record<GradeLetter, number> | null
+  thumbnail: string | null
+}
+
+export interface CandidateTable {
+  rows: CandidateTableRow[]
+  /** Candidates that the filter lets through, on all pages. */
+  count: number
+  /** Candidates without any filter. */
+  all: number
+}
+
+export interface CandidateTableInput {
+  filter: CandidateFilter
+  order: CandidateOrder
+  descending: boolean
+  /** from 0 */
+  page: number
+  pageSize: number
+}
+
+const LEAD_ORDERS: readonly CandidateOrder[] = ['score']
+
+/** A page of the table of candidates. Score and calibration sort and filter for leads only, and are passed over for others. */
+export async function candidateTable(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  input: CandidateTableInput,
+): Promise<CandidateTable> {
+  const scope = candidateScope(permit)
+  const isLead = permit.role === 'lead'
+  const filter = isLead ? input.filter : { ...input.filter, calibration: undefined }
+  const order = isLead || !LEAD_ORDERS.includes(input.order) ? input.order : 'id'
+  const count = await countCandidateSlice(db, scope, filter)
+  const all = await countCandidateSlice(db, scope, {})
+  const rows = await listCandidateSlice(db, scope, {
+    filter,
+    order,
+    descending: input.descending,
+    offset: input.page * input.pageSize,
+    limit: input.pageSize,
+  })
+  const listed = await asListed(db, permit, rows)
+  const ids = listed.map((row) => row.id)
+  const open = listed.filter((row) => !row.withheld).map((row) => row.id)
+  const votes = await countVotes(db, open)
+  const thumbnails = await thumbnailsOf(db, permit, ids)
+  return {
+    count,
+    all,
+    rows: listed.map((row) => ({
+      ...row,
+      votes: row.withheld ? null : (votes.get(row.id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }),
+      thumbnail: thumbnails.get(row.id) ?? null,
+    })),
+  }
+}
+
+/** Addresses of small pictures, by candidate. */
+export async function thumbnailsOf(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateIds: readonly number[],
+): Promise<Map<number, string>> {
+  const stamps = await listThumbnails(db, permit.campaign.id, candidateIds)
+  return new Map(stamps.map(({ candidateId, sha256 }) => [candidateId, stampUrl(permit.campaign.slug, sha256)]))
+}

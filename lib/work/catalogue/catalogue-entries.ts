@@ -1,0 +1,96 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { listEntriesAfter, listEntryAnswers, type EntryAnswer, type EntryRow } from '@/db/queries/catalogue'
+import type { DB } from '@/db/schema'
+import type { GradeLetter } from '@/db/schema/grading'
+import type { StateCause } from '@/db/schema/intake'
+import { fromJson, type IsoTime } from '@/db/schema/values'
+import { GRADE_POINTS, gradesAmong, meanAndSpread } from '@/lib/science/agreement/grades'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { candidateScope } from './candidate-scope'
+import { gradeClass, type GradeClass } from './grade-class'
+
+/** A confirmed candidate as the catalogue says it. */
+export interface CatalogueEntry {
+  id: number
+  /** null: no position is known, and a designation is made of one. */
+  designation: string | null
+  name: string
+  /** ICRS degrees */
+  raDeg: number | null
+  decDeg: number | null
+  gradeClass: GradeClass | null
+  /** Mean and population standard deviation of the points (A 3 to N 0) of the votes below. */
+  mean: number | null
+  spread: number | null
+  votes: Record<GradeLetter, number>
+  /** A ruling stands over the verdict. */
+  decidedBy: StateCause
+  reason: string
+  /** Standing remarks with the pseudonyms of those who made them, in the order given. */
+  remarks: { by: string; remark: string }[]
+  /** What the graders saw, most frequent first. */
+  tags: { tag: string; count: number }[]
+  lensRedshift: number | null
+  sourceRedshift: number | null
+  enteredAt: IsoTime
+}
+
+const PAGE = 500
+
+/**
+ * The catalogue as it stands, in the order of arrival, as far as this person may see it. Read in pages by key: nothing holds
+ * the database between two pages, memory does not grow with the catalogue, and each entry is as of the moment its page is read.
+ *
+ * Votes, mean, spread and class of one entry are counted from the same grades, so that every row agrees with itself also
+ * while a run of the consensus is still to come.
+ */
+export async function* catalogueEntries(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+): AsyncGenerator<CatalogueEntry[], void, void> {
+  const scope = candidateScope(permit)
+  for (let afterId = 0; ;) {
+    const rows = await listEntriesAfter(db, scope, { afterId, limit: PAGE })
+    if (rows.length === 0) return
+    const ids = rows.map((row) => row.id)
+    const answers = Map.groupBy(await listEntryAnswers(db, scope.campaignId, ids), (answer) => answer.candidateId)
+    yield rows.map((row) => entryOf(row, answers.get(row.id) ?? []))
+    if (rows.length < PAGE) return
+    afterId = ids[ids.length - 1]
+  }
+}
+
+function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry {
+  const votes = { A: 0, B: 0, C: 0, N: 0, U: 0 }
+  for (const { grade } of answers) votes[grade] += 1
+  const points = gradesAmong(answers.map(({ grade }) => grade)).map((grade) => GRADE_POINTS[grade])
+  const { mean, spread } = meanAndSpread(points)
+  const ruled = row.rulingId !== null
+  return {
+    id: row.id,
+    designation: row.designation,
+    name: row.name,
+    raDeg: row.raDeg,
+    decDeg: row.decDeg,
+    gradeClass: gradeClass(row.rulingGrade, mean),
+    mean,
+    spread,
+    votes,
+    decidedBy: ruled ? 'ruling' : 'verdict',
+    reason: (ruled ? row.rulingReason : row.verdictReason) ?? '',
+    remarks: answers.flatMap(({ by, remark }) => (remark ? [{ by, remark }] : [])),
+    tags: countTags(answers),
+    lensRedshift: row.lensRedshift,
+    sourceRedshift: row.sourceRedshift,
+    enteredAt: row.enteredAt ?? row.stateSince,
+  }
+}
+
+function countTags(answers: readonly EntryAnswer[]): { tag: string; count: number }[] {
+  const counts = new Map<string, number>()
+  for (const tag of answers.flatMap((answer) => fromJson(answer.tags))) counts.set(tag, (counts.get(tag) ?? 0) + 1)
+  return [...counts]
+    .map(([tag, count]) => ({ tag, count }))
+    .toSorted((a, b) => b.count - a.count || (a.tag < b.tag ? -1 : 1))
+}

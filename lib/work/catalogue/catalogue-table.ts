@@ -1,0 +1,38 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { countEntries } from '@/db/queries/catalogue'
+import type { DB } from '@/db/schema'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { candidateScope } from './candidate-scope'
+import { thumbnailsOf } from './candidate-table'
+import { catalogueEntries, type CatalogueEntry } from './catalogue-entries'
+import { mayExport } from './export-catalogue'
+
+export interface CatalogueTableRow extends Omit<CatalogueEntry, 'remarks' | 'reason' | 'tags'> {
+  tags: string
+  thumbnail: string | null
+}
+
+export interface CatalogueTable {
+  rows: CatalogueTableRow[]
+  /** Confirmed candidates that this person has not judged yet and so does not see: how many, not which. */
+  heldBack: number
+  mayExport: boolean
+}
+
+/** The whole catalogue for its table, as far as this person may see it. */
+export async function catalogueTable(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<CatalogueTable> {
+  const { all, revealed } = await countEntries(db, candidateScope(permit))
+  const rows: CatalogueTableRow[] = []
+  for await (const entries of catalogueEntries(db, permit)) {
+    const thumbnails = await thumbnailsOf(
+      db,
+      permit,
+      entries.map((entry) => entry.id),
+    )
+    for (const { remarks: _remarks, reason: _reason, tags, ...entry } of entries) {
+      rows.push({ ...entry, tags: tags.map(({ tag }) => tag).join(', '), thumbnail: thumbnails.get(entry.id) ?? null })
+    }
+  }
+  return { rows, heldBack: all - revealed, mayExport: mayExport(permit) }
+}

@@ -1,0 +1,95 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { listCandidatesAfter, type CandidateRow } from '@/db/queries/catalogue'
+import type { DB } from '@/db/schema'
+import type { CandidateState } from '@/db/schema/intake'
+import { revealedTo } from '@/lib/work/grading/may-reveal'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { readCursor, writeCursor } from './candidate-cursor'
+import { candidateScope } from './candidate-scope'
+
+export interface ListedVerdict {
+  outcome: CandidateState
+  /** Grades and, beside them, how many could not judge. */
+  grades: number
+  cannotJudge: number
+  /** Points, A 3 to N 0; null without grades. */
+  mean: number | null
+  spread: number | null
+  reason: string
+}
+
+export interface ListedCandidate {
+  id: number
+  name: string
+  /** ICRS degrees */
+  raDeg: number | null
+  decDeg: number | null
+  /** null while withheld */
+  state: CandidateState | null
+  verdict: ListedVerdict | null
+  designation: string | null
+  /** True for a grader who has not judged this candidate yet. */
+  withheld: boolean
+  /** For leads only: what the machine search gave it, and whether it is there to measure graders. */
+  score?: number | null
+  calibration?: boolean
+}
+
+export interface CandidatePage {
+  candidates: ListedCandidate[]
+  /** null on the last page */
+  nextCursor: string | null
+}
+
+export interface CandidateListInput {
+  cursor?: string
+  limit: number
+  /** Only candidates in this state, as far as the reader may know it. */
+  state?: CandidateState
+}
+
+/** Candidates in the order of their arrival, page by page. See `candidateScope` for who sees what. */
+export async function listCandidates(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  input: CandidateListInput,
+): Promise<CandidatePage> {
+  const afterId = input.cursor === undefined ? 0 : readCursor(input.cursor)
+  const { limit, state } = input
+  const rows = await listCandidatesAfter(db, candidateScope(permit), { afterId, limit: limit + 1, state })
+  const page = rows.slice(0, limit)
+  const last = page.at(-1)
+  return {
+    candidates: await asListed(db, permit, page),
+    nextCursor: rows.length > limit && last ? writeCursor(last.id) : null,
+  }
+}
+
+/** The one place where rows become what this person may see. */
+export async function asListed(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  rows: readonly CandidateRow[],
+): Promise<ListedCandidate[]> {
+  const revealed = await revealedTo(
+    db,
+    permit,
+    rows.map((row) => row.id),
+  )
+  return rows.map((row) => {
+    const withheld = !revealed.has(row.id)
+    const { id, name, raDeg, decDeg } = row
+    const forLead = permit.role === 'lead' ? { score: row.score, calibration: row.calibration === 1 } : {}
+    const judged = withheld
+      ? { state: null, verdict: null, designation: null }
+      : { state: row.state, verdict: verdictOf(row), designation: row.designation }
+    return { id, name, raDeg, decDeg, ...judged, withheld, ...forLead }
+  })
+}
+
+function verdictOf(row: CandidateRow): ListedVerdict | null {
+  const { outcome, grades, cannotJudge, mean, spread, reason } = row
+  if (outcome === null) return null
+  return { outcome, grades: grades ?? 0, cannotJudge: cannotJudge ?? 0, mean, spread, reason: reason ?? '' }
+}
