@@ -76,10 +76,7 @@ export interface FoundInvitation extends Invitation {
   invitedByName: string
 }
 
-export async function findInvitation(
-  db: Kysely<DB>,
-  tokenHash: string,
-): Promise<FoundInvitation | null> {
+export async function findInvitation(db: Kysely<DB>, tokenHash: string): Promise<FoundInvitation | null> {
   const row = await db
     .selectFrom('invitation')
     .innerJoin('campaign', 'campaign.id', 'invitation.campaign_id')

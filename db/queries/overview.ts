@@ -1,73 +1,30 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
-import type { Run } from '../schema/consensus'
 
-/** Standing looks at imaged candidates, none counted above `gradesWanted`; without calibration candidates. */
-export async function sumGradesGiven(db: Kysely<DB>, campaignId: number, gradesWanted: number): Promise<number> {
-  const row = await db
-    .selectFrom('candidate')
-    .select(sql<number>`coalesce(sum(min(grades_given, ${gradesWanted})), 0)`.as('given'))
-    .where('campaign_id', '=', campaignId)
-    .where('truth', 'is', null)
-    .where('imaged_at', 'is not', null)
-    .executeTakeFirstOrThrow()
-  return row.given
+export interface LookSums {
+  given: number
+  wanted: number
 }
 
 /**
- * Imaged candidates that still want looks and that this person has not looked at. Calibration candidates count too: nobody
- * may tell by the number which they are.
+ * Standing looks at imaged candidates, none counted above `gradesWanted`, and looks wanted; a candidate that a ruling has
+ * decided wants no more than it has. Without calibration candidates.
  */
-export async function countLeftFor(
-  db: Kysely<DB>,
-  campaignId: number,
-  personId: number,
-  gradesWanted: number,
-): Promise<number> {
-  const row = await db
+export async function sumLooks(db: Kysely<DB>, campaignId: number, gradesWanted: number): Promise<LookSums> {
+  const given = sql<number>`min(candidate.grades_given, ${gradesWanted})`
+  return db
     .selectFrom('candidate')
-    .select((e) => e.fn.countAll<number>().as('n'))
-    .where('campaign_id', '=', campaignId)
-    .where('imaged_at', 'is not', null)
-    .where('grades_given', '<', gradesWanted)
-    .where((e) =>
-      e.not(
-        e.exists(
-          e
-            .selectFrom('grade')
-            .select('grade.id')
-            .whereRef('grade.candidate_id', '=', 'candidate.id')
-            .where('grade.occasion', '=', 'first')
-            .where('grade.person_id', '=', personId),
-        ),
+    .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+    .select([
+      sql<number>`coalesce(sum(${given}), 0)`.as('given'),
+      sql<number>`coalesce(sum(case when ruling.outcome in ('confirmed', 'set aside') then ${given} else ${gradesWanted} end), 0)`.as(
+        'wanted',
       ),
-    )
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.truth', 'is', null)
+    .where('candidate.imaged_at', 'is not', null)
     .executeTakeFirstOrThrow()
-  return row.n
-}
-
-/** Candidates that this person has looked at. */
-export async function countLookedAtBy(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
-  const row = await db
-    .selectFrom('grade')
-    .select((e) => e.fn.countAll<number>().as('n'))
-    .where('campaign_id', '=', campaignId)
-    .where('person_id', '=', personId)
-    .where('occasion', '=', 'first')
-    .where('replaces', 'is', null)
-    .executeTakeFirstOrThrow()
-  return row.n
-}
-
-export async function findNewestRun(db: Kysely<DB>, campaignId: number): Promise<Run | null> {
-  const row = await db
-    .selectFrom('run')
-    .selectAll()
-    .where('campaign_id', '=', campaignId)
-    .orderBy('id', 'desc')
-    .limit(1)
-    .executeTakeFirst()
-  return row ?? null
 }
 
 export async function countRefusedFiles(db: Kysely<DB>, campaignId: number): Promise<number> {

@@ -82,7 +82,13 @@ export async function listAccounts(db: Kysely<DB>): Promise<Account[]> {
     .leftJoin('membership', (join) =>
       join.onRef('membership.person_id', '=', 'person.id').on('membership.ended_at', 'is', null),
     )
-    .select(['person.id', 'person.name', 'person.email', 'person.is_admin as isAdmin', 'person.created_at as createdAt'])
+    .select([
+      'person.id',
+      'person.name',
+      'person.email',
+      'person.is_admin as isAdmin',
+      'person.created_at as createdAt',
+    ])
     .select((e) => e.fn.count<number>('membership.id').as('campaigns'))
     .where('person.left_at', 'is', null)
     .groupBy('person.id')

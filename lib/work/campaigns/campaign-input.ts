@@ -105,3 +105,13 @@ export const CampaignInput = z.object({
   namePattern: NamePattern.default(null),
 })
 export type CampaignInput = z.output<typeof CampaignInput>
+
+/** Both parts of the form at once, so that every fault is told in one go. @throws ZodError with the issues of both. */
+export function parseCampaignForm(fields: Record<string, unknown>): { campaign: CampaignInput; rule: RuleInput } {
+  const campaign = CampaignInput.safeParse(fields)
+  const rule = RuleInput.safeParse(fields)
+  if (campaign.success && rule.success) return { campaign: campaign.data, rule: rule.data }
+  throw new z.ZodError([...(campaign.error?.issues ?? []), ...(rule.error?.issues ?? [])])
+}
+
+export const NamePatternInput = z.object({ namePattern: NamePattern })

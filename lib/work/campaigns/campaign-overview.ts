@@ -3,18 +3,14 @@ import type { Kysely } from 'kysely'
 import { countCandidates, type CampaignCounts } from '@/db/queries/campaigns'
 import { listOpenInvitations } from '@/db/queries/invitations'
 import { countUnfinishedJobs } from '@/db/queries/jobs'
-import {
-  countLeftFor,
-  countLookedAtBy,
-  countRefusedFiles,
-  findNewestRun,
-  listNewestConfirmed,
-  sumGradesGiven,
-} from '@/db/queries/overview'
+import { findNewestRun } from '@/db/queries/consensus'
+import { countRefusedFiles, listNewestConfirmed, sumLooks, type LookSums } from '@/db/queries/overview'
 import { listMembers } from '@/db/queries/people'
+import { countGradedCandidates, countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { RunSummary } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
+import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { ruleInForce, type RuleInForce } from './rule-in-force'
 
@@ -23,7 +19,7 @@ export interface CampaignOverview {
   candidates: number
   imaged: number
   /** Looks given and wanted at all imaged candidates together. */
-  grading: { given: number; wanted: number }
+  grading: LookSums
   /** For those who grade: what is left for them and what they have looked at. */
   mine: { left: number; lookedAt: number } | null
   /** For leads and viewers. A grader's own judgement must not know how the others' turned out. */
@@ -61,10 +57,11 @@ async function upkeepOf(db: Kysely<DB>, campaignId: number) {
 export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<CampaignOverview> {
   const { campaign, viewer, role } = permit
   const [rule, counts] = await Promise.all([ruleInForce(db, campaign.id), countCandidates(db, campaign.id)])
-  const [given, left, lookedAt, outcome, upkeep] = await Promise.all([
-    sumGradesGiven(db, campaign.id, rule.gradesWanted),
-    role === 'viewer' ? 0 : countLeftFor(db, campaign.id, viewer.id, rule.gradesWanted),
-    role === 'viewer' ? 0 : countLookedAtBy(db, campaign.id, viewer.id),
+  const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted: rule.gradesWanted, now: isoTime() }
+  const [grading, left, lookedAt, outcome, upkeep] = await Promise.all([
+    sumLooks(db, campaign.id, rule.gradesWanted),
+    role === 'viewer' ? 0 : countOpenCandidates(db, asker),
+    role === 'viewer' ? 0 : countGradedCandidates(db, campaign.id, viewer.id),
     role === 'grader' ? null : outcomeOf(db, campaign.id, counts),
     role === 'lead' ? upkeepOf(db, campaign.id) : null,
   ])
@@ -72,7 +69,7 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     rule,
     candidates: counts.candidates,
     imaged: counts.imaged,
-    grading: { given, wanted: rule.gradesWanted * counts.imaged },
+    grading,
     mine: role === 'viewer' ? null : { left, lookedAt },
     outcome,
     upkeep,

@@ -1,9 +1,10 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { listCampaigns as listCampaignRows } from '@/db/queries/campaigns'
-import { countLeftFor } from '@/db/queries/overview'
+import { countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { Role } from '@/db/schema/people'
+import { isoTime } from '@/lib/platform/clock'
 import { signInNeeded } from '@/lib/platform/problems/problem'
 import type { Viewer } from '@/lib/work/people/viewer'
 
@@ -28,12 +29,16 @@ export interface CampaignCard {
 /** The campaigns that the person is in, newest first, with what says where each stands. */
 export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Promise<CampaignCard[]> {
   if (!viewer) throw signInNeeded()
+  const now = isoTime()
   const rows = await listCampaignRows(db, viewer.id)
   return Promise.all(
     rows.map(async ({ id, gradesWanted, confirmed, split, ...row }) => ({
       ...row,
       gradesWanted: gradesWanted * row.imaged,
-      left: row.role === 'viewer' ? null : await countLeftFor(db, id, viewer.id, gradesWanted),
+      left:
+        row.role === 'viewer'
+          ? null
+          : await countOpenCandidates(db, { campaignId: id, personId: viewer.id, gradesWanted, now }),
       confirmed: row.role === 'grader' ? null : confirmed,
       split: row.role === 'grader' ? null : split,
     })),

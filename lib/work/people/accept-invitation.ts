@@ -15,7 +15,7 @@ import type { DB } from '@/db/schema'
 import type { Role } from '@/db/schema/people'
 import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
-import { conflict, forbidden, notFound, Problem, signInNeeded } from '@/lib/platform/problems/problem'
+import { conflict, forbidden, notFound, type Problem, signInNeeded } from '@/lib/platform/problems/problem'
 import { hashPassword, Password } from './passwords'
 import { PersonName } from './person-input'
 import { nextPseudonym } from './pseudonyms'
@@ -52,7 +52,10 @@ export async function readInvitation(db: Kysely<DB>, token: string): Promise<Inv
 }
 
 const REFUSED: Record<'expired' | 'withdrawn' | 'used', Problem> = {
-  expired: conflict('invitation-expired', 'This invitation has expired. Ask the lead who invited you to send it again.'),
+  expired: conflict(
+    'invitation-expired',
+    'This invitation has expired. Ask the lead who invited you to send it again.',
+  ),
   withdrawn: conflict(
     'invitation-withdrawn',
     'This invitation was withdrawn or replaced by a newer one. Look for a newer mail, or ask the lead who invited you.',
@@ -81,7 +84,13 @@ async function join(transaction: Kysely<DB>, invitation: FoundInvitation, person
   await upsertMembership(transaction, { campaignId, personId, role, pseudonym, now })
   await setInvitationAccepted(transaction, invitation.id, personId, now)
   const subject = String(invitation.id)
-  await recordEvent(transaction, { personId, campaignId, action: 'people.joined', subject, detail: { role, pseudonym } })
+  await recordEvent(transaction, {
+    personId,
+    campaignId,
+    action: 'people.joined',
+    subject,
+    detail: { role, pseudonym },
+  })
 }
 
 export const NewPersonInput = z.object({ name: PersonName, password: Password })
@@ -104,7 +113,13 @@ export async function acceptAsNewPerson(
     let personId = account?.id
     if (personId === undefined) {
       const { email } = invitation
-      personId = await insertPerson(transaction, { email, name: input.name, passwordHash, isAdmin: false, now: isoTime() })
+      personId = await insertPerson(transaction, {
+        email,
+        name: input.name,
+        passwordHash,
+        isAdmin: false,
+        now: isoTime(),
+      })
     } else {
       await setPersonName(transaction, personId, input.name)
       await setPassword(transaction, personId, passwordHash)

@@ -74,6 +74,10 @@ export async function changeOwnPassword(db: Kysely<DB>, viewer: Viewer | null, i
   const passwordHash = await hashPassword(input.newPassword)
   await db.transaction().execute(async (transaction) => {
     await setPassword(transaction, viewer.id, passwordHash)
-    await recordEvent(transaction, { personId: viewer.id, action: 'people.password-changed', subject: String(viewer.id) })
+    await recordEvent(transaction, {
+      personId: viewer.id,
+      action: 'people.password-changed',
+      subject: String(viewer.id),
+    })
   })
 }

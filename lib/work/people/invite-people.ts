@@ -27,13 +27,21 @@ export const RoleInput = z.enum(['lead', 'grader', 'viewer'], 'Choose lead, grad
 /** Addresses apart by commas, semicolons, blanks or lines; the same one twice is one. */
 const Addresses = z
   .string()
-  .transform((text) => [...new Map(text.split(/[\s,;]+/).filter(Boolean).map((one) => [one.toLowerCase(), one])).values()])
+  .transform((text) => [
+    ...new Map(
+      text
+        .split(/[\s,;]+/)
+        .filter(Boolean)
+        .map((one) => [one.toLowerCase(), one]),
+    ).values(),
+  ])
   .superRefine((addresses, context) => {
     const wrong = addresses.filter((address) => !z.email().max(254).safeParse(address).success)
     const refuse = (message: string) => context.addIssue({ code: 'custom', message })
     if (addresses.length === 0) refuse('Enter at least one e-mail address.')
     if (addresses.length > MOST_ADDRESSES) refuse(`Invite at most ${MOST_ADDRESSES} people at once.`)
-    if (wrong.length) refuse(`No e-mail address: ${wrong.slice(0, 5).join(', ')}. Correct or remove it; nobody was invited yet.`)
+    if (wrong.length)
+      refuse(`No e-mail address: ${wrong.slice(0, 5).join(', ')}. Correct or remove it; nobody was invited yet.`)
   })
 
 export const InviteInput = z.object({ emails: Addresses, role: RoleInput })
@@ -106,9 +114,13 @@ export async function invitePeople(
 async function requireOpenInvitation(db: Kysely<DB>, permit: CampaignPermit<'lead'>, id: number) {
   const invitation = await findCampaignInvitation(db, permit.campaign.id, id)
   if (!invitation) throw notFound('invitation')
-  if (invitation.accepted_at) throw conflict('invitation-used', `${invitation.email} has accepted this invitation already.`)
+  if (invitation.accepted_at)
+    throw conflict('invitation-used', `${invitation.email} has accepted this invitation already.`)
   if (invitation.withdrawn_at) {
-    throw conflict('invitation-withdrawn', 'This invitation was withdrawn or replaced already. Invite the address anew.')
+    throw conflict(
+      'invitation-withdrawn',
+      'This invitation was withdrawn or replaced already. Invite the address anew.',
+    )
   }
   return invitation
 }

@@ -13,6 +13,8 @@ export const Password = z
   )
   .max(200, 'The password may have at most 200 characters.')
 
+export const PASSWORD_HINT = `At least ${LEAST_PASSWORD_LENGTH} characters; a short sentence does well.`
+
 /** Argon2id with 19 MiB, two passes and one lane: the first of the settings that OWASP's password storage sheet names. */
 const SETTINGS = { memoryCost: 19_456, timeCost: 2, parallelism: 1 } as const
 

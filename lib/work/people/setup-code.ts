@@ -83,5 +83,8 @@ export async function spendSetupCode(transaction: Kysely<DB>): Promise<void> {
 }
 
 function administratorExists(): Problem {
-  return conflict('administrator-exists', 'This site has its administrator already, and the code works no more. Sign in.')
+  return conflict(
+    'administrator-exists',
+    'This site has its administrator already, and the code works no more. Sign in.',
+  )
 }

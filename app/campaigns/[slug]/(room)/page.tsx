@@ -1,0 +1,45 @@
+import { permitPage } from '@/app/_lib/page-permit'
+import { GraderOverview, LeadOverview, ViewerOverview } from '@/components/campaigns/overview-view'
+import { fromJson } from '@/db/schema/values'
+import { campaignOverview } from '@/lib/work/campaigns/campaign-overview'
+import { picturesOf } from '@/lib/work/stamps/candidate-pictures'
+
+export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]'>) {
+  const { slug } = await params
+  const { permit } = await permitPage(slug, 'read')
+  return { title: permit.campaign.name }
+}
+
+const VIEW = { lead: LeadOverview, grader: GraderOverview, viewer: ViewerOverview }
+
+export default async function OverviewPage({ params }: PageProps<'/campaigns/[slug]'>) {
+  const { slug } = await params
+  const { db, permit } = await permitPage(slug, 'read')
+  const { campaign, role } = permit
+  const overview = await campaignOverview(db, permit)
+  const newest = overview.outcome?.newestConfirmed ?? []
+  const ids = newest.map(({ id }) => id)
+  const pictures = await picturesOf(db, campaign, ids)
+  const stamps = newest.map(({ id, name }) => {
+    const found = pictures.get(id)
+    const view = found?.views[0]
+    return {
+      id,
+      name,
+      url: view?.url ?? null,
+      width: view?.width ?? 1,
+      height: view?.height ?? 1,
+      geometry: found?.geometry ?? null,
+    }
+  })
+  const bands = fromJson(campaign.bands).join(', ')
+  const View = VIEW[role]
+  return (
+    <View
+      overview={overview}
+      about={`${campaign.survey} (${campaign.acronym}), bands ${bands}`}
+      campaignPath={`/campaigns/${slug}`}
+      stamps={stamps}
+    />
+  )
+}

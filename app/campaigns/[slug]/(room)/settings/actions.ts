@@ -1,0 +1,30 @@
+'use server'
+
+import { revalidatePath } from 'next/cache'
+import { permitLead } from '@/app/_lib/action-permit'
+import { failedForm, type FormState } from '@/app/_lib/form-state'
+import { NamePatternInput, RuleInput } from '@/lib/work/campaigns/campaign-input'
+import { changeNamePattern, changeRule } from '@/lib/work/campaigns/change-settings'
+
+export async function changeRuleAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    const { version } = await changeRule(db, permit, RuleInput.parse(Object.fromEntries(form)))
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return { done: `Version ${version} is in force. A consensus run applies it to every candidate now.` }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}
+
+export async function changeNamePatternAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    const { namePattern } = NamePatternInput.parse(Object.fromEntries(form))
+    await changeNamePattern(db, permit, namePattern)
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return { done: 'Saved. It holds for files that arrive from now on.' }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}

@@ -1,0 +1,22 @@
+import type { Metadata } from 'next'
+import { permitPage } from '@/app/_lib/page-permit'
+import { SettingsView } from '@/components/campaigns/settings-view'
+import { fromJson } from '@/db/schema/values'
+import { listRuleVersions } from '@/lib/work/campaigns/change-settings'
+import { changeNamePatternAction, changeRuleAction } from './actions'
+
+export const metadata: Metadata = { title: 'Settings' }
+
+export default async function SettingsPage({ params }: PageProps<'/campaigns/[slug]/settings'>) {
+  const { slug } = await params
+  const { db, permit } = await permitPage(slug, 'lead', '/settings')
+  const { campaign } = permit
+  return (
+    <SettingsView
+      campaign={{ ...campaign, bands: fromJson(campaign.bands), namePattern: campaign.name_pattern }}
+      versions={await listRuleVersions(db, permit)}
+      changeRule={changeRuleAction.bind(null, slug)}
+      changeNamePattern={changeNamePatternAction.bind(null, slug)}
+    />
+  )
+}

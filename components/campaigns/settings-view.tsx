@@ -1,0 +1,72 @@
+import type { FormAction } from '@/components/people/use-kept-form'
+import type { RuleVersion } from '@/lib/work/campaigns/change-settings'
+import { FormSection } from './form-section'
+import { counted } from './in-words'
+import { PageHead } from './page-head'
+import { RuleHistory } from './rule-history'
+import { NamePatternForm, RuleForm } from './settings-forms'
+
+/** What a lead may change later, and what stays as it was made. */
+export function SettingsView({
+  campaign,
+  versions,
+  changeRule,
+  changeNamePattern,
+}: {
+  campaign: { name: string; survey: string; acronym: string; bands: string[]; namePattern: string | null }
+  versions: RuleVersion[]
+  changeRule: FormAction
+  changeNamePattern: FormAction
+}) {
+  const facts = [
+    ['Survey', campaign.survey],
+    ['Acronym', campaign.acronym],
+    ['Bands, shortest wavelength first', campaign.bands.join(', ')],
+  ]
+  return (
+    <div className="mx-auto flex max-w-6xl flex-col gap-8 px-5 py-8 md:px-10">
+      <PageHead
+        title={`Version ${versions[0].version} of the rule is in force`}
+        lead="A change is added as a new version. Earlier ones stay, and every verdict names the version it was made by."
+      />
+      <FormSection
+        title="The rule"
+        about={
+          <>
+            <p>
+              Saving starts a consensus run: it goes through all grades already given and may move candidates between
+              open, split, confirmed and set aside. Rulings stand above it and grades are never touched.
+            </p>
+            <p className="mt-2">
+              With more grades wanted, candidates come back to the bench of people who have not seen them.
+            </p>
+          </>
+        }
+      >
+        <RuleForm key={versions[0].version} rule={versions[0]} action={changeRule} />
+      </FormSection>
+      <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
+        <RuleHistory versions={versions} />
+      </FormSection>
+      <FormSection
+        title="File names"
+        about="How candidate and band are read from the names of files that arrive from now on. Files already matched stay so."
+      >
+        <NamePatternForm value={campaign.namePattern} action={changeNamePattern} />
+      </FormSection>
+      <FormSection
+        title="Fixed"
+        about="Pictures and designations are made from these, so they stay as the campaign began."
+      >
+        <dl className="grid gap-x-8 gap-y-3 sm:grid-cols-3">
+          {facts.map(([term, value]) => (
+            <div key={term}>
+              <dt className="text-note text-mute">{term}</dt>
+              <dd>{value}</dd>
+            </div>
+          ))}
+        </dl>
+      </FormSection>
+    </div>
+  )
+}
