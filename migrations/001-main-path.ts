@@ -114,6 +114,8 @@ const STATEMENTS = [
   `create index file_batch on file (batch_id)`,
   `create index file_fate on file (campaign_id, fate)`,
   `create index file_name on file (campaign_id, name)`,
+  `create index file_replaced on file (replaced_by) where replaced_by is not null`,
+  `create index file_duplicate on file (duplicate_of) where duplicate_of is not null`,
 
   `create table manifest_row (
     id integer primary key,

@@ -1,5 +1,6 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
+import type { Campaign } from '../schema/campaigns'
 
 export interface StampOfCandidate {
   candidateId: number
@@ -61,4 +62,128 @@ export async function listPlaneGeometries(
     .where('candidate.campaign_id', '=', campaignId)
     .where('plane.candidate_id', 'in', candidateIds)
     .execute()
+}
+
+export interface NewStamp {
+  candidateId: number
+  view: string
+  sha256: string
+  bytes: number
+  width: number
+  height: number
+  note: string | null
+}
+
+/** Puts the stamps of one recipe in place of those that these candidates have of it. */
+export async function replaceStamps(
+  db: Kysely<DB>,
+  campaignId: number,
+  recipeId: number,
+  candidateIds: readonly number[],
+  stamps: readonly NewStamp[],
+): Promise<void> {
+  if (candidateIds.length === 0) return
+  await db.deleteFrom('stamp').where('candidate_id', 'in', candidateIds).where('recipe_id', '=', recipeId).execute()
+  if (stamps.length === 0) return
+  await db
+    .insertInto('stamp')
+    .values(
+      stamps.map((stamp) => ({
+        campaign_id: campaignId,
+        candidate_id: stamp.candidateId,
+        recipe_id: recipeId,
+        view: stamp.view,
+        sha256: stamp.sha256,
+        bytes: stamp.bytes,
+        width: stamp.width,
+        height: stamp.height,
+        note: stamp.note,
+      })),
+    )
+    .execute()
+}
+
+/** The candidate of a stamp of this campaign, or null where the campaign has no such stamp. */
+export async function findCandidateOfStamp(db: Kysely<DB>, campaignId: number, sha256: string): Promise<number | null> {
+  const row = await db
+    .selectFrom('stamp')
+    .select('candidate_id')
+    .where('campaign_id', '=', campaignId)
+    .where('sha256', '=', sha256)
+    .limit(1)
+    .executeTakeFirst()
+  return row?.candidate_id ?? null
+}
+
+/** Names of candidates that have planes but no stamps of this recipe, by key. */
+export async function listCandidatesToImage(
+  db: Kysely<DB>,
+  campaignId: number,
+  recipeId: number,
+  afterId: number,
+  limit: number,
+): Promise<{ id: number; name: string }[]> {
+  return db
+    .selectFrom('candidate')
+    .select(['candidate.id', 'candidate.name'])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.id', '>', afterId)
+    .where((e) =>
+      e.exists(e.selectFrom('plane').select('plane.id').whereRef('plane.candidate_id', '=', 'candidate.id')),
+    )
+    .where((e) =>
+      e.or([
+        e('candidate.imaged_at', 'is', null),
+        e.not(
+          e.exists(
+            e
+              .selectFrom('stamp')
+              .select('stamp.id')
+              .whereRef('stamp.candidate_id', '=', 'candidate.id')
+              .where('stamp.recipe_id', '=', recipeId),
+          ),
+        ),
+      ]),
+    )
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
+}
+
+export async function listCandidatesById(
+  db: Kysely<DB>,
+  campaignId: number,
+  ids: readonly number[],
+): Promise<{ id: number; name: string }[]> {
+  if (ids.length === 0) return []
+  return db
+    .selectFrom('candidate')
+    .select(['id', 'name'])
+    .where('campaign_id', '=', campaignId)
+    .where('id', 'in', ids)
+    .execute()
+}
+
+/** Takes candidates out of the queue until they are imaged again: their cutouts changed, their stamps did not yet. */
+export async function clearImaged(db: Kysely<DB>, candidateIds: readonly number[]): Promise<void> {
+  if (candidateIds.length === 0) return
+  await db.updateTable('candidate').set({ imaged_at: null }).where('id', 'in', candidateIds).execute()
+}
+
+/** Files whose planes these candidates have and that are read but not imaged. */
+export async function setFilesImaged(db: Kysely<DB>, candidateIds: readonly number[], now: string): Promise<void> {
+  if (candidateIds.length === 0) return
+  await db
+    .updateTable('file')
+    .set({ fate: 'imaged', reason: null, updated_at: now })
+    .where('fate', '=', 'read')
+    .where('kind', '=', 'fits')
+    .where('id', 'in', (query) =>
+      query.selectFrom('plane').select('plane.file_id').where('plane.candidate_id', 'in', candidateIds),
+    )
+    .execute()
+}
+
+export async function findCampaignById(db: Kysely<DB>, id: number): Promise<Campaign | null> {
+  return (await db.selectFrom('campaign').selectAll().where('id', '=', id).executeTakeFirst()) ?? null
 }

@@ -1,0 +1,607 @@
+import { sql, type Kysely, type SqlBool } from 'kysely'
+import type { DB } from '../schema'
+import type { Batch, FileFate, FileRow, ManifestRow } from '../schema/intake'
+
+export async function findNewestBatch(
+  db: Kysely<DB>,
+  campaignId: number,
+  personId: number,
+  since: string,
+): Promise<Batch | null> {
+  const row = await db
+    .selectFrom('batch')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('created_by', '=', personId)
+    .where('created_at', '>=', since)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function findBatchByName(db: Kysely<DB>, campaignId: number, name: string): Promise<Batch | null> {
+  const row = await db
+    .selectFrom('batch')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('name', '=', name)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function insertBatch(
+  db: Kysely<DB>,
+  batch: { campaignId: number; name: string; personId: number; now: string },
+): Promise<number> {
+  const row = await db
+    .insertInto('batch')
+    .values({ campaign_id: batch.campaignId, name: batch.name, created_by: batch.personId, created_at: batch.now })
+    .returning('id')
+    .executeTakeFirstOrThrow()
+  return row.id
+}
+
+export async function findFileByContent(
+  db: Kysely<DB>,
+  campaignId: number,
+  sha256: string,
+  name: string,
+): Promise<FileRow | null> {
+  const row = await db
+    .selectFrom('file')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('sha256', '=', sha256)
+    .where('name', '=', name)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+/** A file in use with these bytes, under any name. */
+export async function findFileInUse(
+  db: Kysely<DB>,
+  campaignId: number,
+  sha256: string,
+  kind: FileRow['kind'],
+): Promise<FileRow | null> {
+  const row = await db
+    .selectFrom('file')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('sha256', '=', sha256)
+    .where('kind', '=', kind)
+    .where('fate', 'in', ['stored', 'read', 'imaged'])
+    .where('replaced_by', 'is', null)
+    .orderBy('id')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function insertFile(
+  db: Kysely<DB>,
+  file: {
+    campaignId: number
+    batchId: number
+    name: string
+    kind: FileRow['kind']
+    sha256: string
+    bytes: number
+    fate: FileFate
+    reason: string | null
+    duplicateOf: number | null
+    personId: number
+    now: string
+  },
+): Promise<FileRow> {
+  return db
+    .insertInto('file')
+    .values({
+      campaign_id: file.campaignId,
+      batch_id: file.batchId,
+      name: file.name,
+      kind: file.kind,
+      sha256: file.sha256,
+      bytes: file.bytes,
+      fate: file.fate,
+      fault: null,
+      reason: file.reason,
+      duplicate_of: file.duplicateOf,
+      replaced_by: null,
+      created_by: file.personId,
+      created_at: file.now,
+      updated_at: file.now,
+    })
+    .returningAll()
+    .executeTakeFirstOrThrow()
+}
+
+/** Every other file of this name gives way to `fileId`. Returns the ids of those that were in use. */
+export async function replaceOthersOfName(
+  db: Kysely<DB>,
+  campaignId: number,
+  name: string,
+  fileId: number,
+  now: string,
+): Promise<number[]> {
+  const others = await db
+    .selectFrom('file')
+    .select(['id', 'replaced_by'])
+    .where('campaign_id', '=', campaignId)
+    .where('name', '=', name)
+    .where('id', '!=', fileId)
+    .execute()
+  if (others.length === 0) return []
+  const ids = others.map(({ id }) => id)
+  await db.updateTable('file').set({ replaced_by: fileId, updated_at: now }).where('id', 'in', ids).execute()
+  return others.filter((other) => other.replaced_by === null).map(({ id }) => id)
+}
+
+/** Back to 'stored', to be read again. */
+export async function setFileStored(db: Kysely<DB>, id: number, reason: string | null, now: string): Promise<void> {
+  await db
+    .updateTable('file')
+    .set({ fate: 'stored', fault: null, reason, duplicate_of: null, replaced_by: null, updated_at: now })
+    .where('id', '=', id)
+    .execute()
+}
+
+/** What was a duplicate of files that are no longer in use stands for itself again. */
+export async function releaseDuplicates(db: Kysely<DB>, fileIds: readonly number[], now: string): Promise<void> {
+  if (fileIds.length === 0) return
+  await db
+    .updateTable('file')
+    .set({ fate: 'stored', reason: null, duplicate_of: null, updated_at: now })
+    .where('duplicate_of', 'in', fileIds)
+    .where('fate', '=', 'duplicate')
+    .execute()
+}
+
+/** Refused files that are in force become 'stored' again. `faults` null means any fault. Returns how many. */
+export async function setRefusedStored(
+  db: Kysely<DB>,
+  campaignId: number,
+  faults: readonly string[] | null,
+  now: string,
+): Promise<number> {
+  let query = db
+    .updateTable('file')
+    .set({ fate: 'stored', fault: null, reason: null, updated_at: now })
+    .where('campaign_id', '=', campaignId)
+    .where('fate', '=', 'refused')
+    .where('replaced_by', 'is', null)
+  if (faults) query = query.where('fault', 'in', faults)
+  return Number((await query.executeTakeFirst()).numUpdatedRows)
+}
+
+export type WaitingFile = Pick<FileRow, 'id' | 'name' | 'kind' | 'sha256' | 'bytes' | 'created_at'>
+
+/** Files to be read, oldest first: not replaced, or replaced by one that was refused. */
+export async function listWaitingFiles(
+  db: Kysely<DB>,
+  campaignId: number,
+  kind: FileRow['kind'],
+  afterId: number,
+  limit: number,
+): Promise<WaitingFile[]> {
+  return db
+    .selectFrom('file')
+    .select(['id', 'name', 'kind', 'sha256', 'bytes', 'created_at'])
+    .where('campaign_id', '=', campaignId)
+    .where('fate', '=', 'stored')
+    .where('kind', '=', kind)
+    .where('id', '>', afterId)
+    .where((e) =>
+      e.or([
+        e('replaced_by', 'is', null),
+        e.exists(
+          e
+            .selectFrom('file as newer')
+            .select('newer.id')
+            .whereRef('newer.id', '=', 'file.replaced_by')
+            .where('newer.fate', '=', 'refused'),
+        ),
+      ]),
+    )
+    .orderBy('id')
+    .limit(limit)
+    .execute()
+}
+
+export async function countWaitingFiles(db: Kysely<DB>, campaignId: number): Promise<number> {
+  const row = await db
+    .selectFrom('file')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('campaign_id', '=', campaignId)
+    .where('fate', '=', 'stored')
+    .executeTakeFirstOrThrow()
+  return row.n
+}
+
+/** When the newest file of a campaign came, or null. */
+export async function newestDelivery(db: Kysely<DB>, campaignId: number): Promise<string | null> {
+  const row = await db
+    .selectFrom('file')
+    .select('created_at')
+    .where('campaign_id', '=', campaignId)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row?.created_at ?? null
+}
+
+/** The manifest lines in force (of manifests that were not replaced) for files with these base names. */
+export async function listManifestRowsOfBases(
+  db: Kysely<DB>,
+  campaignId: number,
+  bases: readonly string[],
+): Promise<ManifestRow[]> {
+  if (bases.length === 0) return []
+  return manifestRows(db, campaignId).where('manifest_row.file_base', 'in', bases).execute()
+}
+
+export async function listManifestRowsOfCandidates(
+  db: Kysely<DB>,
+  campaignId: number,
+  names: readonly string[],
+): Promise<ManifestRow[]> {
+  if (names.length === 0) return []
+  return manifestRows(db, campaignId).where('manifest_row.candidate', 'in', names).execute()
+}
+
+function manifestRows(db: Kysely<DB>, campaignId: number) {
+  return db
+    .selectFrom('manifest_row')
+    .innerJoin('file', 'file.id', 'manifest_row.file_id')
+    .selectAll('manifest_row')
+    .where('manifest_row.campaign_id', '=', campaignId)
+    .where('file.replaced_by', 'is', null)
+}
+
+export async function hasManifestRows(db: Kysely<DB>, campaignId: number): Promise<boolean> {
+  const row = await db
+    .selectFrom('manifest_row')
+    .select('id')
+    .where('campaign_id', '=', campaignId)
+    .limit(1)
+    .executeTakeFirst()
+  return row !== undefined
+}
+
+export async function deleteManifestRows(db: Kysely<DB>, fileId: number): Promise<void> {
+  await db.deleteFrom('manifest_row').where('file_id', '=', fileId).execute()
+}
+
+export type NewManifestRow = Omit<ManifestRow, 'id'>
+
+export async function insertManifestRows(db: Kysely<DB>, rows: readonly NewManifestRow[]): Promise<void> {
+  if (rows.length > 0) await db.insertInto('manifest_row').values(rows).execute()
+}
+
+/** Lines of one manifest, by key. */
+export async function listManifestRows(
+  db: Kysely<DB>,
+  fileId: number,
+  afterId: number,
+  limit: number,
+): Promise<ManifestRow[]> {
+  return db
+    .selectFrom('manifest_row')
+    .selectAll()
+    .where('file_id', '=', fileId)
+    .where('id', '>', afterId)
+    .orderBy('id')
+    .limit(limit)
+    .execute()
+}
+
+export interface FileFateUpdate {
+  fate: FileFate
+  fault: string | null
+  reason: string | null
+  duplicateOf: number | null
+}
+
+export async function setFileFates(
+  db: Kysely<DB>,
+  ids: readonly number[],
+  to: FileFateUpdate,
+  now: string,
+): Promise<void> {
+  if (ids.length === 0) return
+  await db
+    .updateTable('file')
+    .set({ fate: to.fate, fault: to.fault, reason: to.reason, duplicate_of: to.duplicateOf, updated_at: now })
+    .where('id', 'in', ids)
+    .execute()
+}
+
+/** Of these files, the ones that are still to be read. */
+export async function listStillWaiting(db: Kysely<DB>, ids: readonly number[]): Promise<Set<number>> {
+  if (ids.length === 0) return new Set()
+  const rows = await db.selectFrom('file').select('id').where('id', 'in', ids).where('fate', '=', 'stored').execute()
+  return new Set(rows.map(({ id }) => id))
+}
+
+export interface ListedFile {
+  id: number
+  name: string
+  kind: FileRow['kind']
+  sha256: string
+  bytes: number
+  fate: FileFate
+  fault: string | null
+  reason: string | null
+  batch: string
+  replacedBy: number | null
+  duplicateOf: string | null
+  createdAt: string
+  updatedAt: string
+}
+
+export interface FilePageFilter {
+  fate?: FileFate
+  /** Leaves this fate out. */
+  notFate?: FileFate
+  /** Part of the name, any case. */
+  search?: string
+  afterId: number
+  limit: number
+}
+
+export async function listFiles(db: Kysely<DB>, campaignId: number, filter: FilePageFilter): Promise<ListedFile[]> {
+  let query = db
+    .selectFrom('file')
+    .innerJoin('batch', 'batch.id', 'file.batch_id')
+    .leftJoin('file as original', 'original.id', 'file.duplicate_of')
+    .select([
+      'file.id',
+      'file.name',
+      'file.kind',
+      'file.sha256',
+      'file.bytes',
+      'file.fate',
+      'file.fault',
+      'file.reason',
+      'batch.name as batch',
+      'file.replaced_by as replacedBy',
+      'original.name as duplicateOf',
+      'file.created_at as createdAt',
+      'file.updated_at as updatedAt',
+    ])
+    .where('file.campaign_id', '=', campaignId)
+    .where('file.id', '>', filter.afterId)
+  if (filter.fate) query = query.where('file.fate', '=', filter.fate)
+  if (filter.notFate) query = query.where('file.fate', '!=', filter.notFate)
+  if (filter.search) query = query.where(sql<SqlBool>`instr(lower(file.name), ${filter.search.toLowerCase()}) > 0`)
+  return query.orderBy('file.id').limit(filter.limit).execute()
+}
+
+export async function countFates(db: Kysely<DB>, campaignId: number): Promise<Record<FileFate, number>> {
+  const rows = await db
+    .selectFrom('file')
+    .select((e) => ['fate', e.fn.countAll<number>().as('n')])
+    .where('campaign_id', '=', campaignId)
+    .groupBy('fate')
+    .execute()
+  const counts: Record<FileFate, number> = { stored: 0, read: 0, imaged: 0, duplicate: 0, refused: 0 }
+  for (const { fate, n } of rows) counts[fate] = n
+  return counts
+}
+
+export interface PlaneOfFile {
+  fileId: number
+  band: string
+  candidateId: number
+  candidate: string
+}
+
+export async function listPlanesOfFiles(db: Kysely<DB>, fileIds: readonly number[]): Promise<PlaneOfFile[]> {
+  if (fileIds.length === 0) return []
+  return db
+    .selectFrom('plane')
+    .innerJoin('candidate', 'candidate.id', 'plane.candidate_id')
+    .select(['plane.file_id as fileId', 'plane.band', 'candidate.id as candidateId', 'candidate.name as candidate'])
+    .where('plane.file_id', 'in', fileIds)
+    .execute()
+}
+
+export interface HeldPlaneRow {
+  candidate: string
+  band: string
+  hdu: number
+  planeIndex: number
+  fileId: number
+  fileName: string
+  sha256: string
+}
+
+/** The planes that candidates of these names have. */
+export async function listHeldPlanes(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidates: readonly string[],
+): Promise<HeldPlaneRow[]> {
+  if (candidates.length === 0) return []
+  return db
+    .selectFrom('candidate')
+    .innerJoin('plane', 'plane.candidate_id', 'candidate.id')
+    .innerJoin('file', 'file.id', 'plane.file_id')
+    .select([
+      'candidate.name as candidate',
+      'plane.band',
+      'plane.hdu',
+      'plane.plane_index as planeIndex',
+      'plane.file_id as fileId',
+      'file.name as fileName',
+      'file.sha256',
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.name', 'in', candidates)
+    .execute()
+}
+
+/** File names with the candidate that has their planes, by key of the file. */
+export async function listFilesOfCandidates(
+  db: Kysely<DB>,
+  campaignId: number,
+  afterId: number,
+  limit: number,
+): Promise<{ id: number; name: string; candidate: string }[]> {
+  return db
+    .selectFrom('file')
+    .innerJoin('plane', 'plane.file_id', 'file.id')
+    .innerJoin('candidate', 'candidate.id', 'plane.candidate_id')
+    .select(['file.id', 'file.name', 'candidate.name as candidate'])
+    .where('file.campaign_id', '=', campaignId)
+    .where('file.id', '>', afterId)
+    .groupBy('file.id')
+    .orderBy('file.id')
+    .limit(limit)
+    .execute()
+}
+
+export interface CandidateFacts {
+  name: string
+  raDeg: number | null
+  decDeg: number | null
+  pixelScaleArcsec: number | null
+  score: number | null
+  lensRedshift: number | null
+  sourceRedshift: number | null
+  /** null leaves what is there. */
+  imagedAt: string | null
+}
+
+/** Adds candidates, or gives those of the same name these facts; a fact that is null leaves what is there. Ids by name. */
+export async function upsertCandidates(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidates: readonly CandidateFacts[],
+  now: string,
+): Promise<Map<string, number>> {
+  if (candidates.length === 0) return new Map()
+  const kept = (column: string) => sql<never>`coalesce(excluded.${sql.ref(column)}, candidate.${sql.ref(column)})`
+  const rows = await db
+    .insertInto('candidate')
+    .values(
+      candidates.map((candidate) => ({
+        campaign_id: campaignId,
+        name: candidate.name,
+        ra_deg: candidate.raDeg,
+        dec_deg: candidate.decDeg,
+        pixel_scale_arcsec: candidate.pixelScaleArcsec,
+        score: candidate.score,
+        lens_redshift: candidate.lensRedshift,
+        source_redshift: candidate.sourceRedshift,
+        truth: null,
+        imaged_at: candidate.imagedAt,
+        state_cause: null,
+        state_cause_id: null,
+        state_since: now,
+        verdict_id: null,
+        ruling_id: null,
+        created_at: now,
+      })),
+    )
+    .onConflict((conflict) =>
+      conflict.columns(['campaign_id', 'name']).doUpdateSet({
+        ra_deg: kept('ra_deg'),
+        dec_deg: kept('dec_deg'),
+        pixel_scale_arcsec: kept('pixel_scale_arcsec'),
+        score: kept('score'),
+        lens_redshift: kept('lens_redshift'),
+        source_redshift: kept('source_redshift'),
+        imaged_at: kept('imaged_at'),
+      }),
+    )
+    .returning(['id', 'name'])
+    .execute()
+  return new Map(rows.map(({ id, name }) => [name, id]))
+}
+
+/** Of these names, the candidates that there are. */
+export async function listCandidateNames(
+  db: Kysely<DB>,
+  campaignId: number,
+  names: readonly string[],
+): Promise<string[]> {
+  if (names.length === 0) return []
+  const rows = await db
+    .selectFrom('candidate')
+    .select('name')
+    .where('campaign_id', '=', campaignId)
+    .where('name', 'in', names)
+    .execute()
+  return rows.map(({ name }) => name)
+}
+
+export interface NewPlane {
+  candidateId: number
+  band: string
+  fileId: number
+  hdu: number
+  planeIndex: number
+  width: number
+  height: number
+  wcs: string | null
+  pixelScaleArcsec: number | null
+  background: number
+  noise: number
+}
+
+/** Adds planes; a plane of the same candidate and band gives way. */
+export async function upsertPlanes(db: Kysely<DB>, planes: readonly NewPlane[]): Promise<void> {
+  if (planes.length === 0) return
+  await db
+    .insertInto('plane')
+    .values(
+      planes.map((plane) => ({
+        candidate_id: plane.candidateId,
+        band: plane.band,
+        file_id: plane.fileId,
+        hdu: plane.hdu,
+        plane_index: plane.planeIndex,
+        width: plane.width,
+        height: plane.height,
+        wcs: plane.wcs,
+        pixel_scale_arcsec: plane.pixelScaleArcsec,
+        background: plane.background,
+        noise: plane.noise,
+      })),
+    )
+    .onConflict((conflict) =>
+      conflict.columns(['candidate_id', 'band']).doUpdateSet((e) => ({
+        file_id: e.ref('excluded.file_id'),
+        hdu: e.ref('excluded.hdu'),
+        plane_index: e.ref('excluded.plane_index'),
+        width: e.ref('excluded.width'),
+        height: e.ref('excluded.height'),
+        wcs: e.ref('excluded.wcs'),
+        pixel_scale_arcsec: e.ref('excluded.pixel_scale_arcsec'),
+        background: e.ref('excluded.background'),
+        noise: e.ref('excluded.noise'),
+      })),
+    )
+    .execute()
+}
+
+/** Takes away the planes of files that these have replaced and returns the candidates that had them. */
+export async function deletePlanesOfReplaced(db: Kysely<DB>, fileIds: readonly number[]): Promise<number[]> {
+  if (fileIds.length === 0) return []
+  const old = await db.selectFrom('file').select('id').where('replaced_by', 'in', fileIds).execute()
+  if (old.length === 0) return []
+  const rows = await db
+    .deleteFrom('plane')
+    .where(
+      'file_id',
+      'in',
+      old.map(({ id }) => id),
+    )
+    .returning('candidate_id')
+    .execute()
+  return [...new Set(rows.map((row) => row.candidate_id))]
+}

@@ -1,0 +1,42 @@
+/** The columns of a manifest and the spellings in which they come. Case, blanks, `_`, `-` and `.` do not count. */
+export const MANIFEST_COLUMNS = {
+  file: ['file', 'filename', 'filepath', 'path', 'fits', 'fitsfile', 'image', 'cutout'],
+  candidate: [
+    'candidate',
+    'name',
+    'id',
+    'candidateid',
+    'candidatename',
+    'objectid',
+    'objid',
+    'object',
+    'source',
+    'sourceid',
+    'target',
+  ],
+  band: ['band', 'filter', 'filt'],
+  ra: ['ra', 'radeg', 'raj2000', 'rajdeg', 'rightascension', 'alphaj2000', 'alpha'],
+  dec: ['dec', 'decdeg', 'de', 'dej2000', 'decj2000', 'dedeg', 'declination', 'deltaj2000', 'delta'],
+  pixelScale: ['pixelscale', 'pixscale', 'pixelscalearcsec', 'pixelsize', 'scale', 'arcsecperpixel'],
+  score: ['score', 'probability', 'prob', 'rank', 'mlscore', 'cnnscore', 'lensscore', 'plens'],
+  lensRedshift: ['lensredshift', 'zlens', 'zl', 'zd', 'lensz', 'redshiftlens'],
+  sourceRedshift: ['sourceredshift', 'zsource', 'zs', 'zsrc', 'sourcez', 'redshiftsource'],
+} as const
+
+export type ManifestColumn = keyof typeof MANIFEST_COLUMNS
+
+const plain = (header: string): string => header.toLowerCase().replace(/\(.*?\)|\[.*?\]|[\s_.\-#]/g, '')
+
+/**
+ * Which header stands for which column. The spellings are tried in the order above, so that `candidate` stands before `id`
+ * when a table has both.
+ */
+export function manifestColumns(header: readonly string[]): Partial<Record<ManifestColumn, string>> {
+  const bySpelling = new Map(header.toReversed().map((name) => [plain(name), name]))
+  const found: Partial<Record<ManifestColumn, string>> = {}
+  for (const [column, spellings] of Object.entries(MANIFEST_COLUMNS) as [ManifestColumn, readonly string[]][]) {
+    const spelling = spellings.find((name) => bySpelling.has(name))
+    if (spelling !== undefined) found[column] = bySpelling.get(spelling)
+  }
+  return found
+}

@@ -1,0 +1,114 @@
+import { readCsv } from '@/lib/science/formats/csv'
+import { parseDeclination, parseRightAscension } from '@/lib/science/sky/coordinates'
+import { baseName } from './file-name'
+import { manifestColumns, type ManifestColumn } from './manifest-columns'
+
+export interface ManifestEntry {
+  line: number
+  fileName: string | null
+  fileBase: string | null
+  candidate: string | null
+  band: string | null
+  raDeg: number | null
+  decDeg: number | null
+  pixelScaleArcsec: number | null
+  score: number | null
+  lensRedshift: number | null
+  sourceRedshift: number | null
+}
+
+export interface ParsedManifest {
+  entries: ManifestEntry[]
+  /** One sentence each; a value named here was left out, the rest of its line was taken. */
+  problems: string[]
+  /** Set when nothing can be taken from the file. */
+  refusal: { fault: string; reason: string } | null
+}
+
+const EMPTY = /^(|-|–|—|nan|null|none|n\/?a|--)$/i
+
+/** Words that mean nothing are nothing: an empty cell, `-`, `nan`, `null`. */
+function cell(values: Record<string, string>, name: string | undefined): string | null {
+  const text = name === undefined ? '' : (values[name] ?? '').trim()
+  return EMPTY.test(text) ? null : text
+}
+
+/** Never throws on bad content: every value that cannot be used is named with its line. */
+export function parseManifest(bytes: Uint8Array): ParsedManifest {
+  const table = readCsv(bytes)
+  const columns = manifestColumns(table.header)
+  const problems = table.problems.map(({ line, message }) => (line === null ? message : `Line ${line}: ${message}`))
+  if (columns.file === undefined && columns.candidate === undefined) {
+    const found = table.header.length > 0 ? `it has ${table.header.slice(0, 12).join(', ')}` : 'it has none'
+    const reason = `A manifest needs a column 'file' or 'candidate' in its first line, and ${found}. It may also have band, ra, dec, pixel_scale, score, lens_redshift and source_redshift.`
+    return { entries: [], problems, refusal: { fault: 'no-columns', reason } }
+  }
+  const entries = table.rows.flatMap(({ line, values }) => entryOf(line, values, columns, problems) ?? [])
+  return { entries, problems, refusal: null }
+}
+
+function entryOf(
+  line: number,
+  values: Record<string, string>,
+  columns: Partial<Record<ManifestColumn, string>>,
+  problems: string[],
+): ManifestEntry | null {
+  const fileName = cell(values, columns.file)
+  const candidate = cell(values, columns.candidate)
+  if (fileName === null && candidate === null) {
+    problems.push(`Line ${line}: neither a file nor a candidate is named, so that nothing is taken from it.`)
+    return null
+  }
+  const fault = (sentence: string) => void problems.push(`Line ${line}: ${sentence}`)
+  const position = positionOf(cell(values, columns.ra), cell(values, columns.dec), fault)
+  const number = (column: ManifestColumn, allowed: (value: number) => boolean, rule: string) => {
+    const text = cell(values, columns[column])
+    if (text === null) return null
+    const value = Number(text)
+    if (Number.isFinite(value) && allowed(value)) return value
+    fault(`${columns[column]} is '${text}'; ${rule}.`)
+    return null
+  }
+  return {
+    line,
+    fileName: fileName?.replaceAll('\\', '/').replace(/^(\.?\/)+/, '') ?? null,
+    fileBase: fileName === null ? null : baseName(fileName.replaceAll('\\', '/')),
+    candidate: candidate?.slice(0, 200) ?? null,
+    band: cell(values, columns.band),
+    ...position,
+    pixelScaleArcsec: number(
+      'pixelScale',
+      (value) => value > 0 && value < 3600,
+      'a pixel scale is a number of arcseconds above 0',
+    ),
+    score: number('score', () => true, 'a score is a number'),
+    lensRedshift: number('lensRedshift', (value) => value >= 0 && value < 20, 'a redshift is a number from 0 to 20'),
+    sourceRedshift: number(
+      'sourceRedshift',
+      (value) => value >= 0 && value < 20,
+      'a redshift is a number from 0 to 20',
+    ),
+  }
+}
+
+/** Both or none: half a position is no position. */
+function positionOf(
+  ra: string | null,
+  dec: string | null,
+  fault: (sentence: string) => void,
+): { raDeg: number | null; decDeg: number | null } {
+  const none = { raDeg: null, decDeg: null }
+  if (ra === null && dec === null) return none
+  if (ra === null || dec === null) {
+    fault(
+      `it has a ${ra === null ? 'declination without a right ascension' : 'right ascension without a declination'}.`,
+    )
+    return none
+  }
+  try {
+    return { raDeg: parseRightAscension(ra), decDeg: parseDeclination(dec) }
+  } catch (error) {
+    fault(error instanceof Error ? error.message : String(error))
+    return none
+  }
+}

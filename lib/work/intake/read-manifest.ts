@@ -1,0 +1,137 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import {
+  deleteManifestRows,
+  insertManifestRows,
+  listCandidateNames,
+  listFilesOfCandidates,
+  listManifestRows,
+  listManifestRowsOfBases,
+  listManifestRowsOfCandidates,
+  setFileFates,
+  upsertCandidates,
+  type WaitingFile,
+} from '@/db/queries/intake'
+import type { DB } from '@/db/schema'
+import type { ManifestRow } from '@/db/schema/intake'
+import { isoTime } from '@/lib/platform/clock'
+import { baseName } from './file-name'
+import { manifestFacts } from './manifest-facts'
+import { rowsOfFile } from './match-name'
+import type { ManifestEntry, ParsedManifest } from './parse-manifest'
+import { tryUnmatchedAgain } from './try-again'
+
+const ROWS_PER_STATEMENT = 500
+const PROBLEMS_TOLD = 5
+
+/**
+ * Keeps the lines of a parsed manifest, gives the candidates that are here already what it tells of them, and has unmatched
+ * files tried again. Runs again from the start after a kill: the file stays 'stored' until all of it is done.
+ */
+export async function keepManifest(
+  db: Kysely<DB>,
+  campaignId: number,
+  file: WaitingFile,
+  parsed: ParsedManifest,
+): Promise<void> {
+  const { entries, problems, refusal } = parsed
+  if (refusal) {
+    await setFileFates(db, [file.id], { fate: 'refused', ...refusal, duplicateOf: null }, isoTime())
+    return
+  }
+  await deleteManifestRows(db, file.id)
+  for (let start = 0; start < entries.length; start += ROWS_PER_STATEMENT) {
+    const part = entries.slice(start, start + ROWS_PER_STATEMENT)
+    await insertManifestRows(
+      db,
+      part.map((entry) => rowOf(entry, campaignId, file.id)),
+    )
+  }
+  await updateNamedCandidates(db, campaignId, file.id)
+  if (entries.some(({ candidate, fileName }) => candidate === null && fileName !== null)) {
+    await updateCandidatesOfFiles(db, campaignId)
+  }
+  await db.transaction().execute(async (transaction) => {
+    const to = {
+      fate: 'read',
+      fault: null,
+      reason: manifestReason(entries.length, problems),
+      duplicateOf: null,
+    } as const
+    await setFileFates(transaction, [file.id], to, isoTime())
+    await tryUnmatchedAgain(transaction, campaignId)
+  })
+}
+
+function manifestReason(lines: number, problems: string[]): string {
+  const counted = `${lines} ${lines === 1 ? 'line' : 'lines'} taken.`
+  if (problems.length === 0) return counted
+  const more = problems.length > PROBLEMS_TOLD ? ` And ${problems.length - PROBLEMS_TOLD} more.` : ''
+  return `${counted} ${problems.slice(0, PROBLEMS_TOLD).join(' ')}${more}`
+}
+
+function rowOf(entry: ManifestEntry, campaignId: number, fileId: number): Omit<ManifestRow, 'id'> {
+  return {
+    campaign_id: campaignId,
+    file_id: fileId,
+    line: entry.line,
+    file_name: entry.fileName,
+    file_base: entry.fileBase,
+    candidate: entry.candidate,
+    band: entry.band,
+    ra_deg: entry.raDeg,
+    dec_deg: entry.decDeg,
+    pixel_scale_arcsec: entry.pixelScaleArcsec,
+    score: entry.score,
+    lens_redshift: entry.lensRedshift,
+    source_redshift: entry.sourceRedshift,
+  }
+}
+
+async function updateNamedCandidates(db: Kysely<DB>, campaignId: number, fileId: number): Promise<void> {
+  for (let afterId = 0; ;) {
+    const rows = await listManifestRows(db, fileId, afterId, ROWS_PER_STATEMENT)
+    const last = rows.at(-1)
+    if (!last) return
+    afterId = last.id
+    const names = [...new Set(rows.flatMap(({ candidate }) => candidate ?? []))]
+    const known = await listCandidateNames(db, campaignId, names)
+    const told = groupBy(await listManifestRowsOfCandidates(db, campaignId, known), ({ candidate }) => candidate ?? '')
+    await giveFacts(db, campaignId, told)
+  }
+}
+
+/** For lines that name a file and no candidate. */
+async function updateCandidatesOfFiles(db: Kysely<DB>, campaignId: number): Promise<void> {
+  for (let afterId = 0; ;) {
+    const files = await listFilesOfCandidates(db, campaignId, afterId, ROWS_PER_STATEMENT)
+    const last = files.at(-1)
+    if (!last) return
+    afterId = last.id
+    const bases = [...new Set(files.map(({ name }) => baseName(name)))]
+    const byBase = groupBy(await listManifestRowsOfBases(db, campaignId, bases), (row) =>
+      (row.file_base ?? '').toLowerCase(),
+    )
+    const told = new Map<string, ManifestRow[]>()
+    for (const { name, candidate } of files) {
+      const rows = rowsOfFile(name, byBase.get(baseName(name).toLowerCase()) ?? [])
+      if (rows.length > 0) told.set(candidate, [...(told.get(candidate) ?? []), ...rows])
+    }
+    await giveFacts(db, campaignId, told)
+  }
+}
+
+async function giveFacts(db: Kysely<DB>, campaignId: number, told: Map<string, ManifestRow[]>): Promise<void> {
+  const facts = [...told].map(([name, rows]) => ({ name, ...manifestFacts(rows), imagedAt: null }))
+  await upsertCandidates(db, campaignId, facts, isoTime())
+}
+
+export function groupBy<T>(rows: readonly T[], keyOf: (row: T) => string): Map<string, T[]> {
+  const groups = new Map<string, T[]>()
+  for (const row of rows) {
+    const group = groups.get(keyOf(row))
+    if (group) group.push(row)
+    else groups.set(keyOf(row), [row])
+  }
+  return groups
+}

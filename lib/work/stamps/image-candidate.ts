@@ -1,0 +1,148 @@
+import { separationArcsec } from '@/lib/science/sky/separation'
+import { bandTaken } from '@/lib/work/intake/refusals'
+import { drawStamps } from './draw-stamps'
+import { readCutouts, readHeldPlane, type Cutout } from './read-cutout'
+import type { CandidateOutcome, CandidateToImage, FileOutcome, FileToRead, ImageTask, StampMade } from './worker-tasks'
+
+/** Farther than this from the other position of the same candidate, a person should look (common practice, no source). */
+const FAR_ARCSEC = 5
+
+interface Gathered {
+  files: FileOutcome[]
+  /** By band: of the files read now. */
+  read: Map<string, Cutout>
+  /** Earlier files of the same names, whose planes give way. */
+  replaced: Set<number>
+}
+
+/** Reads a candidate's new files and makes its stamps of them and of the planes it has already, all in one go. */
+export async function imageCandidate(
+  candidate: CandidateToImage,
+  task: ImageTask,
+): Promise<() => Promise<CandidateOutcome>> {
+  const { files, read, replaced } = await gatherFiles(candidate, task.bands)
+  const cutouts = new Map(read)
+  const unreadable: string[] = []
+  for (const held of candidate.held) {
+    if (cutouts.has(held.band) || replaced.has(held.file.id)) continue
+    const cutout = await readHeldPlane(held)
+    if (cutout) cutouts.set(held.band, cutout)
+    else unreadable.push(held.file.name)
+  }
+  const ordered = task.bands.flatMap((band) => cutouts.get(band) ?? [])
+  addPositionNotes(files, ordered, candidate)
+  const outcome: CandidateOutcome = {
+    name: candidate.name,
+    files,
+    planes: [...read.values()].map(({ plane }) => plane),
+    position: ordered.find(({ centre }) => centre !== null)?.centre ?? null,
+    pixelScaleArcsec: ordered.find(({ plane }) => plane.pixelScaleArcsec !== null)?.plane.pixelScaleArcsec ?? null,
+    stamps: null,
+    imagingFault: null,
+  }
+  if (unreadable.length > 0) {
+    outcome.imagingFault = `Not imaged: ${unreadable.join(', ')} can no longer be read on the server. Send it again under the same name.`
+    return async () => outcome
+  }
+  if (ordered.length === 0) return async () => outcome
+  return startDrawing(outcome, ordered, task)
+}
+
+/** Drawing is under way when this returns; the returned function waits for it, so that the next candidate can be read. */
+function startDrawing(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageTask): () => Promise<CandidateOutcome> {
+  const planes = cutouts.map(({ plane, data }) => ({
+    band: plane.band,
+    width: plane.width,
+    height: plane.height,
+    data,
+  }))
+  const drawing: Promise<StampMade[] | Error> = Promise.resolve()
+    .then(() => drawStamps(planes, task.recipe, task.stampFolder))
+    .catch((error: unknown) => (error instanceof Error ? error : new Error(String(error))))
+  return async () => {
+    const stamps = await drawing
+    if (!(stamps instanceof Error)) return { ...outcome, stamps }
+    // A full disk is no fault of the files: the whole job is tried again later.
+    if ('code' in stamps) throw stamps
+    return { ...outcome, imagingFault: `Read, but its pictures could not be made: ${stamps.message}` }
+  }
+}
+
+async function gatherFiles(candidate: CandidateToImage, bands: readonly string[]): Promise<Gathered> {
+  const gathered: Gathered = { files: [], read: new Map(), replaced: new Set() }
+  for (const file of candidate.files) {
+    const result = await readCutouts(file, bands)
+    if ('refusal' in result) {
+      const kept = heldUnderName(candidate, file).length > 0 ? ' The earlier file of this name stays in use.' : ''
+      const { fault, reason } = result.refusal
+      gathered.files.push({ id: file.id, fate: 'refused', fault, reason: reason + kept, duplicateOf: null })
+      continue
+    }
+    const clash = clashOf(candidate, file, result.cutouts, gathered)
+    if (clash) {
+      gathered.files.push(clash)
+      continue
+    }
+    for (const cutout of result.cutouts) gathered.read.set(cutout.plane.band, cutout)
+    for (const { file: old } of heldUnderName(candidate, file)) gathered.replaced.add(old.id)
+    const reason = result.notes.join(' ') || null
+    gathered.files.push({ id: file.id, fate: 'read', fault: null, reason, duplicateOf: null })
+  }
+  return gathered
+}
+
+const heldUnderName = (candidate: CandidateToImage, file: FileToRead) =>
+  candidate.held.filter((held) => held.file.name === file.name && held.file.id !== file.id)
+
+/** A band that another file has given already: the same bytes are a duplicate, other ones are refused. */
+function clashOf(
+  candidate: CandidateToImage,
+  file: FileToRead,
+  cutouts: Cutout[],
+  gathered: Gathered,
+): FileOutcome | null {
+  for (const { plane } of cutouts) {
+    const now = gathered.read.get(plane.band)?.plane.fileId
+    const holder =
+      candidate.files.find(({ id }) => id === now) ??
+      candidate.held.find(({ band, file: old }) => band === plane.band && old.name !== file.name && old.id !== file.id)
+        ?.file
+    if (!holder) continue
+    if (holder.sha256 === file.sha256) {
+      const reason = `The same bytes as '${holder.name}'.`
+      return { id: file.id, fate: 'duplicate', fault: null, reason, duplicateOf: holder.id }
+    }
+    return { id: file.id, fate: 'refused', ...bandTaken(candidate.name, plane.band, holder.name), duplicateOf: null }
+  }
+  return null
+}
+
+function addPositionNotes(files: FileOutcome[], cutouts: Cutout[], { manifestPosition }: CandidateToImage): void {
+  const first = cutouts.find(({ centre }) => centre !== null)
+  for (const file of files) {
+    if (file.fate !== 'read') continue
+    const own = cutouts.filter(({ plane }) => plane.fileId === file.id)
+    const notes: string[] = [...new Set(own.flatMap(({ wcsFault }) => wcsFault ?? []))]
+    const centre = own.find((cutout) => cutout.centre !== null)?.centre ?? null
+    if (centre && manifestPosition) {
+      const apart = separationArcsec(centre, manifestPosition)
+      if (apart > FAR_ARCSEC) {
+        notes.push(`The manifest's position is used; the middle of this image is ${arcsec(apart)} from it.`)
+      }
+    } else if (centre && first?.centre && first.plane.fileId !== file.id) {
+      const apart = separationArcsec(centre, first.centre)
+      if (apart > FAR_ARCSEC)
+        notes.push(`Its middle is ${arcsec(apart)} from that of band ${first.plane.band}: is it the same object?`)
+    } else if (!centre && !first && !manifestPosition) {
+      notes.push('No position: the header has no usable WCS, and no manifest gives right ascension and declination.')
+    }
+    if (notes.length > 0) file.reason = [file.reason, ...notes].filter(Boolean).join(' ')
+  }
+}
+
+const arcsec = (value: number): string =>
+  value < 60
+    ? `${value.toFixed(1)} arcsec`
+    : value < 3600
+      ? `${(value / 60).toFixed(1)} arcmin`
+      : `${(value / 3600).toFixed(1)} degrees`

@@ -1,0 +1,50 @@
+/**
+ * The image workers' side of the pool: bundled to dist-workers/image-worker.mjs (npm run workers), so nothing here may
+ * touch the database, the settings or Next. Also called directly by tests.
+ */
+import { readFileSync } from 'node:fs'
+import { bandsOfFile } from '@/lib/work/intake/bands-of-file'
+import { candidateOfHeaders } from '@/lib/work/intake/candidate-of-header'
+import { parseManifest, type ParsedManifest } from '@/lib/work/intake/parse-manifest'
+import { imageCandidate } from './image-candidate'
+import { openFits } from './read-cutout'
+import type { CandidateOutcome, FileProbe, ImageTask, ProbeTask, StoredFile } from './worker-tasks'
+
+/** While the PNGs of this many candidates are encoded in libuv's threads, the next is read and rendered here. */
+const AHEAD = 3
+
+export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
+  const waiting: Promise<CandidateOutcome>[] = []
+  for (const [index, candidate] of task.candidates.entries()) {
+    if (index >= AHEAD) await waiting[index - AHEAD]
+    const finish = await imageCandidate(candidate, task)
+    const outcome = finish()
+    // A failure is thrown by Promise.all below; until then it is not unhandled.
+    outcome.catch(() => {})
+    waiting.push(outcome)
+  }
+  return Promise.all(waiting)
+}
+
+export async function probe({ files, bands }: ProbeTask): Promise<FileProbe[]> {
+  const probes: FileProbe[] = []
+  for (const file of files) probes.push(await probeFile(file, bands))
+  return probes
+}
+
+async function probeFile(file: StoredFile, bands: string[]): Promise<FileProbe> {
+  const fits = await openFits(file)
+  if ('refusal' in fits) return { id: file.id, object: null, manyBands: false, refusal: fits.refusal }
+  const found = bandsOfFile(fits, null, bands, file.name)
+  const manyBands = 'places' in found && found.places.length > 1
+  return {
+    id: file.id,
+    object: candidateOfHeaders([...fits.images.map(({ header }) => header), fits.primary]),
+    manyBands,
+    refusal: null,
+  }
+}
+
+export async function manifest(path: string): Promise<ParsedManifest> {
+  return parseManifest(readFileSync(path))
+}

@@ -1,0 +1,141 @@
+import 'server-only'
+import { countWaitingFiles, listWaitingFiles, newestDelivery } from '@/db/queries/intake'
+import { isoTime } from '@/lib/platform/clock'
+import { groupBy, keepManifest } from '@/lib/work/intake/read-manifest'
+import { campaignWork, type CampaignWork, type ImagingTools } from './campaign-work'
+import { matchByHeader, matchPage, type UnmatchedFile } from './match-waiting'
+import { planImaging } from './plan-imaging'
+import { runImaging } from './run-imaging'
+import { WaitingCandidates, type MatchedFile } from './waiting-candidates'
+
+const FILES_PER_PAGE = 3000
+const LOOK_AGAIN_MS = 250
+/** A file that shows its bands only when it is opened waits this long at most while more files keep coming. */
+const LONGEST_WAIT_MS = 20_000
+
+type Progress = (done: number, total: number) => Promise<void>
+
+/**
+ * Reads and images every stored file of a campaign, each file once: files are gathered by candidate, and one call to a worker
+ * reads a candidate's files, draws its stamps and answers with rows. Ends when nothing is left to be read. All that it
+ * has to remember is the fate of the files, so after a kill it goes on where it was.
+ */
+export async function readFiles(tools: ImagingTools, campaignId: number, progress: Progress): Promise<void> {
+  const reading = new Reading(tools, campaignId, progress)
+  // Files can go back to 'stored' behind the pages already seen, so it ends only when a look from the start finds nothing.
+  while (await reading.readAll()) reading.startOver()
+}
+
+class Reading {
+  #afterId = 0
+  #done = 0
+  #total = 0
+  #reported = 0
+  readonly #seen = new Map<number, number>()
+  constructor(
+    private readonly tools: ImagingTools,
+    private readonly campaignId: number,
+    private readonly progress: Progress,
+  ) {}
+
+  startOver(): void {
+    this.#afterId = 0
+  }
+
+  /** Returns whether there was anything to read. */
+  async readAll(): Promise<boolean> {
+    const { db } = this.tools
+    this.#total = this.#done + (await countWaitingFiles(db, this.campaignId))
+    await this.#tell(0)
+    let found = await this.#readManifests()
+    // Settings are read after manifests and once for this pass: a change asks for another.
+    const work = await campaignWork(db, this.campaignId)
+    const waiting = new WaitingCandidates(work.bands.length)
+    const unmatched: UnmatchedFile[] = []
+    for (;;) {
+      const files = await listWaitingFiles(db, this.campaignId, 'fits', this.#afterId, FILES_PER_PAGE)
+      if (files.length > 0) {
+        found = true
+        this.#afterId = files[files.length - 1].id
+        await this.#readPage(work, files, waiting, unmatched)
+        if (files.length === FILES_PER_PAGE) continue
+      }
+      if (waiting.files + unmatched.length === 0) {
+        if (files.length === 0) return found
+        continue
+      }
+      if (await this.#isQuiet()) {
+        await this.#readRest(work, waiting.takeAll(), unmatched.splice(0))
+        continue
+      }
+      const due = isoTime(-LONGEST_WAIT_MS)
+      const old = unmatched.filter(({ file }) => file.created_at < due)
+      const untold = waiting.takeUntoldBefore(due)
+      if (old.length + untold.length > 0) await this.#readRest(work, untold, unmatched.splice(0, old.length))
+      // A manifest that came meanwhile may name the files that wait.
+      if (await this.#readManifests()) return true
+      if (files.length === 0) await new Promise((resolve) => setTimeout(resolve, LOOK_AGAIN_MS))
+    }
+  }
+
+  async #readPage(
+    work: CampaignWork,
+    files: Awaited<ReturnType<typeof listWaitingFiles>>,
+    waiting: WaitingCandidates,
+    unmatched: UnmatchedFile[],
+  ): Promise<void> {
+    for (const { id } of files) this.#refuseEndless(id)
+    const page = await matchPage(this.tools, work, files)
+    unmatched.push(...page.unmatched)
+    const ready = page.matched.flatMap((matched) => {
+      const group = waiting.add(matched, page.heldBands.get(matched.candidate) ?? 0)
+      return group ? [group] : []
+    })
+    await this.#tell(page.refused)
+    await this.#image(work, ready)
+  }
+
+  async #readRest(work: CampaignWork, waiting: MatchedFile[][], unmatched: UnmatchedFile[]): Promise<void> {
+    const { matched, refused } = await matchByHeader(this.tools, work, unmatched)
+    await this.#tell(refused)
+    const groups = groupBy([...waiting.flat(), ...matched], ({ candidate }) => candidate)
+    await this.#image(work, [...groups.values()])
+  }
+
+  async #image(work: CampaignWork, groups: MatchedFile[][]): Promise<void> {
+    if (groups.length === 0) return
+    const planned = await planImaging(this.tools, work, groups)
+    await runImaging(this.tools, work, planned, (files) => this.#tell(files))
+  }
+
+  async #readManifests(): Promise<boolean> {
+    const { db, blobs, runner } = this.tools
+    const files = await listWaitingFiles(db, this.campaignId, 'manifest', 0, FILES_PER_PAGE)
+    for (const file of files) {
+      await keepManifest(db, this.campaignId, file, await runner.manifest(blobs.pathOf(file.sha256)))
+      await this.#tell(1)
+    }
+    return files.length > 0
+  }
+
+  async #isQuiet(): Promise<boolean> {
+    const newest = await newestDelivery(this.tools.db, this.campaignId)
+    return newest === null || Date.now() - Date.parse(newest) >= this.tools.quietMs
+  }
+
+  async #tell(settled: number): Promise<void> {
+    this.#done += settled
+    // Each report is a synced write: four a second are enough to watch.
+    if (settled > 0 && Date.now() - this.#reported < 250 && this.#done < this.#total) return
+    this.#reported = Date.now()
+    this.#total = Math.max(this.#total, this.#done)
+    await this.progress(this.#done, this.#total)
+  }
+
+  /** A file that is never settled would be read for ever. */
+  #refuseEndless(id: number): void {
+    const times = (this.#seen.get(id) ?? 0) + 1
+    this.#seen.set(id, times)
+    if (times > 20) throw new Error(`File ${id} has been read ${times} times without getting a fate`)
+  }
+}

@@ -1,0 +1,107 @@
+import type { ParsedManifest } from '@/lib/work/intake/parse-manifest'
+import type { Recipe } from '@/lib/science/imaging/recipe'
+import type { SkyPosition } from '@/lib/science/sky/separation'
+
+/** What crosses between the server and its image workers: names and numbers, never pixels. */
+
+export interface StoredFile {
+  id: number
+  name: string
+  sha256: string
+  /** Where its bytes are. */
+  path: string
+}
+
+export interface FileToRead extends StoredFile {
+  /** The band that the manifest or the file name told; null leaves it to the header. */
+  band: string | null
+}
+
+/** A plane that the candidate has from a file read earlier. */
+export interface HeldPlane {
+  band: string
+  hdu: number
+  planeIndex: number
+  file: StoredFile
+}
+
+export interface CandidateToImage {
+  name: string
+  files: FileToRead[]
+  held: HeldPlane[]
+  manifestPosition: SkyPosition | null
+}
+
+export interface ImageTask {
+  /** In order of wavelength. */
+  bands: string[]
+  recipe: Recipe
+  stampFolder: string
+  candidates: CandidateToImage[]
+}
+
+export interface PlaneRead {
+  fileId: number
+  band: string
+  hdu: number
+  planeIndex: number
+  width: number
+  height: number
+  /** JSON of the Wcs object. */
+  wcs: string | null
+  pixelScaleArcsec: number | null
+  background: number
+  noise: number
+}
+
+export interface FileOutcome {
+  id: number
+  fate: 'read' | 'duplicate' | 'refused'
+  fault: string | null
+  /** Why it is refused, or what one should know of a file that is read. */
+  reason: string | null
+  duplicateOf: number | null
+}
+
+export interface StampMade {
+  view: string
+  sha256: string
+  bytes: number
+  width: number
+  height: number
+  note: string | null
+}
+
+export interface CandidateOutcome {
+  name: string
+  files: FileOutcome[]
+  /** Of the files read now. */
+  planes: PlaneRead[]
+  /** Of the first band that has a WCS. */
+  position: SkyPosition | null
+  pixelScaleArcsec: number | null
+  /** null: not imaged, because nothing could be read or `imagingFault` says why. */
+  stamps: StampMade[] | null
+  imagingFault: string | null
+}
+
+export interface ProbeTask {
+  files: StoredFile[]
+  bands: string[]
+}
+
+export interface FileProbe {
+  id: number
+  /** What the headers call the object, such as a candidate or a survey tile. */
+  object: { keyword: string; name: string } | null
+  /** It holds several bands as extensions or as a cube. */
+  manyBands: boolean
+  refusal: { fault: string; reason: string } | null
+}
+
+/** Done by a pool of threads in the server, and directly in tests. */
+export interface ImageRunner {
+  image(task: ImageTask): Promise<CandidateOutcome[]>
+  probe(task: ProbeTask): Promise<FileProbe[]>
+  manifest(path: string): Promise<ParsedManifest>
+}
