@@ -1,0 +1,44 @@
+import { ArrowLeft } from 'lucide-react'
+import Link from 'next/link'
+import type { BenchCandidate } from '@/lib/work/queue/lend-next'
+import { Coordinates } from './coordinates'
+
+export function BenchHeader({
+  slug,
+  campaignName,
+  counts,
+  candidate,
+}: {
+  slug: string
+  campaignName: string
+  counts: { given: number; left: number }
+  candidate: BenchCandidate | null
+}) {
+  return (
+    <header className="flex flex-wrap items-center justify-between gap-x-6 px-3 pt-2 md:px-6 md:pt-3">
+      <div className="flex min-w-0 items-center gap-3">
+        <Link
+          prefetch={false}
+          href={`/campaigns/${slug}`}
+          aria-label={`Leave the bench, to ${campaignName}`}
+          title="Leave the bench"
+          className="-ml-2 grid size-11 shrink-0 place-items-center rounded-control text-mute hover:text-text md:size-8"
+        >
+          <ArrowLeft size={18} aria-hidden="true" />
+        </Link>
+        <span className="hidden truncate text-small font-semibold lg:inline">{campaignName}</span>
+        <span className="whitespace-nowrap text-note text-mute">
+          <span className="figures">{counts.given.toLocaleString('en')}</span> of{' '}
+          <span className="figures">{(counts.given + counts.left).toLocaleString('en')}</span>
+          <span className="hidden sm:inline"> graded by you</span>
+        </span>
+      </div>
+      {candidate ? (
+        <div className="flex min-w-0 flex-wrap items-center gap-x-4">
+          <h1 className="figures truncate text-small font-semibold">{candidate.name}</h1>
+          <Coordinates key={candidate.id} raDeg={candidate.raDeg} decDeg={candidate.decDeg} />
+        </div>
+      ) : null}
+    </header>
+  )
+}

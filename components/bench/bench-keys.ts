@@ -1,0 +1,95 @@
+/** What a key means at the bench. Single keys only, never with a modifier, never while typing. */
+import type { GradeLetter } from '@/db/schema/grading'
+
+export type Command =
+  | { do: 'grade'; letter: GradeLetter }
+  | { do: 'view'; index: number }
+  | { do: 'next view'; step: 1 | -1 }
+  | { do: 'choose'; index: number }
+  | { do: 'tags' }
+  | { do: 'reasons' }
+  | { do: 'close' }
+  | { do: 'remark' }
+  | { do: 'undo' }
+  | { do: 'keep' }
+  | { do: 'blink' }
+  | { do: 'help' }
+
+/** While a chooser is open digits pick from it; letters mean what they always mean, so no grade goes astray. */
+export type Chooser = 'tags' | 'reasons' | null
+
+/** Keys of the choices in a chooser, in order. */
+export const CHOICE_KEYS = ['1', '2', '3', '4', '5', '6', '7', '8', '9', '0', 'F'] as const
+
+const LETTERS: Record<string, Command> = {
+  a: { do: 'grade', letter: 'A' },
+  b: { do: 'grade', letter: 'B' },
+  c: { do: 'grade', letter: 'C' },
+  n: { do: 'grade', letter: 'N' },
+  u: { do: 'grade', letter: 'U' },
+  t: { do: 'tags' },
+  w: { do: 'reasons' },
+  m: { do: 'remark' },
+  z: { do: 'undo' },
+  k: { do: 'keep' },
+  x: { do: 'blink' },
+  h: { do: 'help' },
+  '?': { do: 'help' },
+  ' ': { do: 'blink' },
+  arrowleft: { do: 'next view', step: -1 },
+  arrowright: { do: 'next view', step: 1 },
+}
+
+interface Pressed {
+  key: string
+  code: string
+  repeat: boolean
+  ctrlKey: boolean
+  altKey: boolean
+  metaKey: boolean
+  shiftKey: boolean
+  isComposing: boolean
+}
+
+/** What has the focus: a text field takes every key; a button takes Space and Enter for itself. */
+export type FocusKind = 'text' | 'control' | 'page'
+
+export function focusKind(target: EventTarget | null): FocusKind {
+  if (!(target instanceof Element)) return 'page'
+  if (target.closest('input, textarea, select, [contenteditable]:not([contenteditable="false"])')) return 'text'
+  return target.closest('button, a[href], summary, [role="button"]') ? 'control' : 'page'
+}
+
+/** Layouts that put digits on the shifted row still have the key in that place. */
+function digitOf({ key, code }: Pressed): string | null {
+  return /^\d$/.test(key) ? key : (/^Digit(\d)$/.exec(code)?.[1] ?? null)
+}
+
+export function commandOf(event: Pressed, focus: FocusKind, chooser: Chooser): Command | null {
+  if (focus === 'text' || event.repeat || event.isComposing) return null
+  if (event.ctrlKey || event.altKey || event.metaKey || (event.shiftKey && event.key !== '?')) return null
+  if (focus === 'control' && (event.key === ' ' || event.key === 'Enter')) return null
+  if (event.key === 'Escape' || event.key === 'Enter') return chooser ? { do: 'close' } : null
+  const digit = digitOf(event)
+  if (chooser) {
+    const index = CHOICE_KEYS.indexOf((digit ?? event.key.toUpperCase()) as (typeof CHOICE_KEYS)[number])
+    if (index >= 0) return { do: 'choose', index }
+  }
+  if (digit) return digit === '0' ? null : { do: 'view', index: Number(digit) - 1 }
+  return LETTERS[event.key.toLowerCase()] ?? null
+}
+
+/** For the help overlay and the README: every key and what it does. */
+export const KEY_TABLE: { keys: string[]; does: string }[] = [
+  { keys: ['A', 'B', 'C', 'N'], does: 'grade: sure, probable, possible, not a lens' },
+  { keys: ['U'], does: 'cannot judge this picture' },
+  { keys: ['W'], does: 'say why it could not be judged, just after U' },
+  { keys: ['1', '…', '9'], does: 'show that view' },
+  { keys: ['←', '→'], does: 'view before, view after' },
+  { keys: ['Space', 'X'], does: 'hold to blink against the view before' },
+  { keys: ['T'], does: 'tags: then 1 to 9, 0 and F pick; a grade or Enter closes' },
+  { keys: ['M'], does: 'remark: Enter or Esc closes it, Shift+Enter starts a line' },
+  { keys: ['Z'], does: 'undo: back to the one graded last, then further' },
+  { keys: ['K'], does: 'keep the grade you look back at, and return' },
+  { keys: ['H', '?'], does: 'this help' },
+]

@@ -1,0 +1,65 @@
+import type { GradeLetter } from '@/db/schema/grading'
+import { KeyCap } from '@/components/ui/key-cap'
+import { CANNOT_JUDGE, RUNGS } from './grade-words'
+import { letGo } from './let-go'
+
+/** At the right a ladder, A on top; on a phone a row for the thumbs. `chosen` marks the grade that is looked back at. */
+export function GradeLadder({
+  chosen,
+  onGrade,
+}: {
+  chosen: GradeLetter | null
+  onGrade: (letter: GradeLetter) => void
+}) {
+  return (
+    <div role="group" aria-labelledby="bench-question">
+      <h2 id="bench-question" className="mb-2 hidden text-note font-semibold text-mute md:block">
+        How sure are you that this is a lens?
+      </h2>
+      <div className="grid grid-cols-5 gap-1.5 md:flex md:flex-col md:gap-0">
+        {RUNGS.map(({ letter, name, means, ink, bar }) => (
+          <button
+            key={letter}
+            type="button"
+            aria-label={`${letter}: ${name}, ${means}`}
+            aria-pressed={chosen === letter}
+            onClick={letGo(() => onGrade(letter))}
+            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line bg-raise/60 active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:bg-transparent md:text-left md:last:border-b md:hover:bg-raise ${
+              chosen === letter ? 'bg-raise md:bg-raise' : ''
+            }`}
+          >
+            <span className={`text-[1.625rem] font-bold leading-none md:pl-0.5 ${ink}`}>{letter}</span>
+            <span>
+              <span className="block text-[0.6875rem] leading-tight text-mute md:text-body md:text-text">{name}</span>
+              <span className="hidden text-note text-mute md:block">{means}</span>
+            </span>
+            {chosen === letter ? (
+              <span className="absolute right-4 top-1/2 hidden -translate-y-1/2 text-note text-lamp md:block">
+                given
+              </span>
+            ) : null}
+            <i
+              className={`absolute inset-x-0 bottom-0 h-1.5 md:inset-x-auto md:inset-y-0 md:right-0 md:h-auto md:w-1.5 ${bar}`}
+            />
+          </button>
+        ))}
+        <button
+          type="button"
+          aria-label={`U: ${CANNOT_JUDGE}`}
+          aria-pressed={chosen === 'U'}
+          onClick={letGo(() => onGrade('U'))}
+          className={`flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 rounded-control border border-line text-mute active:bg-raise md:mt-2 md:min-h-8 md:flex-row md:justify-start md:gap-2 md:border-transparent md:text-small md:hover:text-text ${
+            chosen === 'U' ? 'bg-raise' : ''
+          }`}
+        >
+          <span className="text-[1.625rem] font-bold leading-none md:hidden">U</span>
+          <span className="hidden md:block">
+            <KeyCap>U</KeyCap>
+          </span>
+          <span className="text-[0.6875rem] leading-tight md:text-small">{CANNOT_JUDGE}</span>
+          {chosen === 'U' ? <span className="hidden text-note text-lamp md:block">given</span> : null}
+        </button>
+      </div>
+    </div>
+  )
+}

@@ -1,0 +1,81 @@
+import { KeyCap } from '@/components/ui/key-cap'
+import { CANNOT_JUDGE_REASONS, type CannotJudgeReason } from '@/lib/work/grading/tags'
+import { currentLook, explainable, type BenchSession } from './bench-session'
+import { ChoiceChips } from './choice-chips'
+import { gradeName } from './grade-words'
+import { letGo } from './let-go'
+
+const INK = { A: 'text-letter-a', B: 'text-letter-b', C: 'text-letter-c', N: 'text-letter-n', U: 'text-text' }
+
+function LineButton({ label, keyName, onPress }: { label: string; keyName: string; onPress: () => void }) {
+  return (
+    <button
+      type="button"
+      onClick={letGo(onPress)}
+      className="flex min-h-11 items-center gap-1.5 whitespace-nowrap rounded-control px-1.5 text-note text-mute hover:text-text md:min-h-7"
+    >
+      <KeyCap>{keyName}</KeyCap>
+      {label}
+    </button>
+  )
+}
+
+/** One line of fixed height above the stamp: what was just given, or that one looks back. Nothing moves when it changes. */
+export function LastLine({
+  session,
+  hint,
+  explaining,
+  onUndo,
+  onKeep,
+  onExplain,
+  onReason,
+}: {
+  session: BenchSession
+  /** Said instead, such as why a key did nothing. */
+  hint: string | null
+  explaining: boolean
+  onUndo: () => void
+  onKeep: () => void
+  onExplain: () => void
+  onReason: (reason: CannotJudgeReason) => void
+}) {
+  const look = currentLook(session)
+  const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
+  const unclear = explainable(session)
+  return (
+    <div className="flex min-h-11 items-center justify-center gap-x-2 overflow-x-auto px-3 text-note text-mute md:min-h-10">
+      {hint ? (
+        <span className="text-text">{hint}</span>
+      ) : session.lookingBack !== null && look?.answer ? (
+        <>
+          <span>
+            Looking back: you gave{' '}
+            <b className={INK[look.answer.grade]}>
+              {look.answer.grade} {gradeName(look.answer.grade).toLowerCase()}
+            </b>
+            . Grade again to correct it.
+          </span>
+          <LineButton label="keep it" keyName="K" onPress={onKeep} />
+          {session.lookingBack > 0 ? <LineButton label="further" keyName="Z" onPress={onUndo} /> : null}
+        </>
+      ) : last ? (
+        <>
+          <b className={`text-body ${INK[last.answer.grade]}`}>{last.answer.grade}</b>
+          <span className="whitespace-nowrap">
+            {WHAT[session.last?.what ?? 'given']} <span className="figures">{last.candidate.name}</span>
+          </span>
+          <LineButton label="undo" keyName="Z" onPress={onUndo} />
+          {unclear && !explaining && !unclear.answer.reason ? (
+            <LineButton label="say why" keyName="W" onPress={onExplain} />
+          ) : null}
+          {unclear?.answer.reason ? <span className="whitespace-nowrap">{unclear.answer.reason}</span> : null}
+          {unclear && explaining ? (
+            <ChoiceChips choices={CANNOT_JUDGE_REASONS} picked={[]} open onPick={onReason} />
+          ) : null}
+        </>
+      ) : null}
+    </div>
+  )
+}
+
+const WHAT = { given: 'given to', corrected: 'corrected for', kept: 'kept for' } as const

@@ -1,0 +1,65 @@
+import { KeyCap } from '@/components/ui/key-cap'
+import { letGo } from './let-go'
+
+export const REMARK_ID = 'bench-remark'
+const MOST_CHARACTERS = 2000
+
+/** One line until it is opened. What is written goes with the grade; closing keeps it. */
+export function RemarkBox({
+  remark,
+  open,
+  onOpen,
+  onClose,
+  onWrite,
+}: {
+  remark: string
+  open: boolean
+  onOpen: () => void
+  onClose: () => void
+  onWrite: (remark: string) => void
+}) {
+  if (!open) {
+    return (
+      <button
+        type="button"
+        onClick={letGo(onOpen)}
+        className="flex min-h-11 w-full items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
+      >
+        <KeyCap>M</KeyCap>
+        {remark.trim() ? (
+          <span className="line-clamp-2 text-text">{remark}</span>
+        ) : (
+          <span className="font-semibold">Add a remark</span>
+        )}
+      </button>
+    )
+  }
+  return (
+    <div className="flex flex-col gap-1">
+      <label htmlFor={REMARK_ID} className="text-note font-semibold text-mute">
+        Remark
+      </label>
+      <textarea
+        id={REMARK_ID}
+        autoFocus
+        rows={3}
+        maxLength={MOST_CHARACTERS}
+        value={remark}
+        aria-describedby="bench-remark-hint"
+        onChange={(event) => onWrite(event.target.value)}
+        onKeyDown={(event) => {
+          if (event.nativeEvent.isComposing) return
+          if (event.key === 'Escape' || (event.key === 'Enter' && !event.shiftKey)) {
+            event.preventDefault()
+            event.stopPropagation()
+            onClose()
+          }
+        }}
+        className="w-full resize-none rounded-control border border-edge bg-well px-2.5 py-1.5 text-base text-text md:text-small"
+      />
+      <p id="bench-remark-hint" className="text-note text-mute">
+        Goes with the grade. Enter or Esc closes, Shift+Enter starts a line.
+      </p>
+    </div>
+  )
+}

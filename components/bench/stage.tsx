@@ -1,0 +1,96 @@
+import { useState, type ReactNode } from 'react'
+import { Button } from '@/components/ui/button'
+import { StampOverlay } from '@/components/ui/stamp-overlay'
+import type { BenchCandidate } from '@/lib/work/queue/lend-next'
+import { useHoldAndSwipe } from './use-hold-and-swipe'
+
+/** Small pictures grow in whole steps of their pixels, larger ones in halves and quarters, so that pixels stay even. */
+function growthStep(longerSide: number): number {
+  return longerSide <= 130 ? longerSide : longerSide <= 260 ? longerSide / 2 : longerSide / 4
+}
+
+/**
+ * The stamp, as large as the window allows. All views of the candidate lie on top of each other and one is visible, so that
+ * changing and blinking never wait. Holding it down blinks, sweeping sideways changes the view.
+ */
+export function Stage({
+  candidate,
+  shown,
+  onSeen,
+  onBlink,
+  onSweep,
+}: {
+  candidate: BenchCandidate
+  shown: string | null
+  /** A picture of this candidate is in sight. */
+  onSeen: (candidateId: number) => void
+  onBlink: (on: boolean) => void
+  onSweep: (step: 1 | -1) => void
+}) {
+  const [broken, setBroken] = useState<readonly string[]>([])
+  const [attempt, setAttempt] = useState(0)
+  const hold = useHoldAndSwipe(onBlink, onSweep)
+  const view = candidate.views.find(({ key }) => key === shown) ?? candidate.views[0]
+  const longest = Math.max(1, ...candidate.views.map(({ width, height }) => Math.max(width, height)))
+  const missing = view?.url ? broken.includes(view.url) : false
+  return (
+    <figure className="flex min-h-0 flex-1 flex-col">
+      <div className="grid min-h-0 flex-1 place-items-center px-3 [container-type:size] md:px-6">
+        <div
+          {...hold}
+          className="relative aspect-square w-[min(100cqw,100cqh)] touch-pan-y select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
+          style={{ width: `round(down, min(100cqw, 100cqh), ${growthStep(longest)}px)` }}
+        >
+          {candidate.views.map(({ key, label, url, width, height }) =>
+            url ? (
+              <img
+                key={`${key} ${attempt}`}
+                ref={(image) => {
+                  if (image?.complete && image.naturalWidth > 0) onSeen(candidate.id)
+                }}
+                src={url}
+                alt={key === view?.key ? `${candidate.name}, ${label}` : ''}
+                aria-hidden={key !== view?.key}
+                width={width}
+                height={height}
+                decoding="sync"
+                draggable={false}
+                onLoad={() => onSeen(candidate.id)}
+                onError={() => setBroken((old) => [...old, url])}
+                className={`pixelated absolute inset-0 size-full object-contain ${key === view?.key && !missing ? '' : 'invisible'}`}
+              />
+            ) : null,
+          )}
+          {view?.url && !missing ? (
+            <StampOverlay width={view.width} height={view.height} geometry={candidate.geometry} />
+          ) : null}
+          {view?.url ? null : <Absent>There is no picture of this view.</Absent>}
+          {missing ? (
+            <Absent>
+              This picture did not load.
+              <Button
+                onClick={() => {
+                  setBroken([])
+                  setAttempt(attempt + 1)
+                }}
+              >
+                Load it again
+              </Button>
+            </Absent>
+          ) : null}
+        </div>
+      </div>
+      <figcaption className="flex min-h-6 items-center justify-center gap-3 px-3 text-note text-tray-text">
+        <span className="truncate">{view?.note ?? ''}</span>
+      </figcaption>
+    </figure>
+  )
+}
+
+function Absent({ children }: { children: ReactNode }) {
+  return (
+    <div className="absolute inset-0 flex flex-col items-center justify-center gap-3 p-6 text-center text-small text-tray-text">
+      {children}
+    </div>
+  )
+}

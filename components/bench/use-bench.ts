@@ -1,0 +1,182 @@
+'use client'
+
+import { useEffect, useReducer, useRef, useState } from 'react'
+import type { GradeLetter } from '@/db/schema/grading'
+import { CANNOT_JUDGE_REASONS, TAGS, type CannotJudgeReason } from '@/lib/work/grading/tags'
+import type { LentQueue } from '@/lib/work/queue/lend-next'
+import type { Chooser, Command } from './bench-keys'
+import {
+  currentDraft,
+  currentLook,
+  explainable,
+  openSession,
+  reduceSession,
+  sameAnswer,
+  type Answer,
+  type Look,
+} from './bench-session'
+import { makeUid } from './make-uid'
+import { REMARK_ID } from './remark-box'
+import { useOutbox } from './use-outbox'
+import { usePreloaded } from './use-preloaded'
+import { useSupply } from './use-supply'
+import { useVisibleSeconds } from './use-visible-seconds'
+
+/** A key that bounces, or a second press meant for the candidate before, comes faster than anybody can look. */
+const LEAST_LOOK_MS = 120
+const HINT_MS = 2500
+
+/** Everything the bench does, for whoever draws it. */
+export function useBench(slug: string, personId: number, first: LentQueue) {
+  const [session, dispatch] = useReducer(reduceSession, first, openSession)
+  const [chooser, setChooser] = useState<Chooser>(null)
+  const [remarkOpen, setRemarkOpen] = useState(false)
+  const [helpOpen, setHelpOpen] = useState(false)
+  const [blinking, setBlinking] = useState(false)
+  const [hint, setHint] = useState<string | null>(null)
+  const seen = useRef(new Set<number>())
+  const broughtAt = useRef(0)
+
+  const look = currentLook(session)
+  const candidateId = look?.candidate.id ?? null
+  const { outbox, snapshot } = useOutbox(slug, personId, ({ first: wasFirst, candidateId: id }) => {
+    if (wasFirst) dispatch({ type: 'refused', candidateId: id })
+  })
+  useSupply({ slug, session, dispatch, outbox: () => outbox?.snapshot() ?? snapshot })
+  usePreloaded(session.upcoming)
+  const seconds = useVisibleSeconds(candidateId)
+
+  useEffect(() => {
+    broughtAt.current = performance.now()
+  }, [candidateId])
+  useEffect(() => {
+    if (!hint) return
+    const timer = setTimeout(() => setHint(null), HINT_MS)
+    return () => clearTimeout(timer)
+  }, [hint])
+
+  function send({ candidate }: Look, answer: Answer, isFirst: boolean, view: string | null, spent: number): void {
+    const { grade, tags, reason } = answer
+    outbox?.add({
+      candidateId: candidate.id,
+      name: candidate.name,
+      first: isFirst,
+      at: Date.now(),
+      body: { id: makeUid(), grade, tags, remark: answer.remark.trim() || null, view, seconds: spent, reason },
+    })
+  }
+
+  function grade(letter: GradeLetter): void {
+    if (!look || !outbox || performance.now() - broughtAt.current < LEAST_LOOK_MS) return
+    const { candidate, answer: before } = look
+    const hasPicture = candidate.views.some(({ url }) => url !== null)
+    if (letter !== 'U' && !(hasPicture && seen.current.has(candidate.id))) {
+      setHint(
+        hasPicture ? 'The picture is still on its way. Grade it when you see it.' : 'Without a picture only U fits.',
+      )
+      return
+    }
+    const reason = letter === 'U' ? (before?.reason ?? null) : null
+    const { tags, remark } = currentDraft(session)
+    const given: Answer = { tags, remark, grade: letter, reason }
+    if (!before || !sameAnswer(before, given))
+      send({ candidate, answer: given }, given, !before, session.view, seconds())
+    dispatch({ type: 'graded', answer: given })
+    settle()
+  }
+
+  function settle(): void {
+    setChooser(null)
+    setRemarkOpen(false)
+    setBlinking(false)
+    setHint(null)
+  }
+
+  function explain(reason: CannotJudgeReason): void {
+    const unclear = explainable(session)
+    setChooser(null)
+    if (!unclear || unclear.answer.reason === reason) return
+    send(unclear, { ...unclear.answer, reason }, false, null, 0)
+    dispatch({ type: 'explained', reason })
+  }
+
+  function undo(): void {
+    if (session.given.length === 0) return setHint('Nothing has been graded in this sitting yet.')
+    if (session.lookingBack === 0) return setHint('This is the first of this sitting.')
+    dispatch({ type: 'went back' })
+    settle()
+  }
+
+  function keep(): void {
+    dispatch({ type: 'kept' })
+    settle()
+  }
+
+  function chooseView(index: number): void {
+    const view = look?.candidate.views[index]
+    if (view) dispatch({ type: 'view chosen', key: view.key })
+  }
+
+  function stepView(step: 1 | -1): void {
+    const views = look?.candidate.views ?? []
+    const at = views.findIndex(({ key }) => key === session.view)
+    if (views.length > 0) chooseView((at + step + views.length) % views.length)
+  }
+
+  function run(command: Command): void {
+    if (command.do === 'help') return setHelpOpen(!helpOpen)
+    if (helpOpen) return
+    switch (command.do) {
+      case 'grade':
+        return grade(command.letter)
+      case 'undo':
+        return undo()
+      case 'keep':
+        return keep()
+      case 'close':
+        return setChooser(null)
+      case 'tags':
+        return setChooser(chooser === 'tags' || !look ? null : 'tags')
+      case 'reasons':
+        return setChooser(chooser === 'reasons' || !explainable(session) ? null : 'reasons')
+      case 'remark':
+        setChooser(null)
+        document.getElementById(REMARK_ID)?.focus()
+        return setRemarkOpen(look !== null)
+      case 'blink':
+        return setBlinking(true)
+      case 'view':
+        return chooseView(command.index)
+      case 'next view':
+        return stepView(command.step)
+      case 'choose': {
+        const tag = TAGS[command.index]
+        const reason = CANNOT_JUDGE_REASONS[command.index]
+        if (chooser === 'reasons') return reason ? explain(reason) : undefined
+        return tag ? dispatch({ type: 'tag toggled', tag }) : undefined
+      }
+    }
+  }
+
+  return {
+    session,
+    look,
+    draft: currentDraft(session),
+    shownView: blinking ? (session.previousView ?? session.view) : session.view,
+    chooser,
+    remarkOpen,
+    helpOpen,
+    hint,
+    snapshot,
+    run,
+    explain,
+    setHelpOpen,
+    setBlinking,
+    closeRemark: () => setRemarkOpen(false),
+    markSeen: (id: number) => seen.current.add(id),
+    toggleTag: (tag: (typeof TAGS)[number]) => dispatch({ type: 'tag toggled', tag }),
+    writeRemark: (remark: string) => dispatch({ type: 'remark written', remark }),
+    chooseView: (key: string) => dispatch({ type: 'view chosen', key }),
+    dismiss: (id: string) => outbox?.dismiss(id),
+  }
+}
