@@ -6,6 +6,12 @@ type Method = 'wilson' | 'wilson_continuity' | 'clopper_pearson' | 'jeffreys'
 type Metric = 'nominal' | 'ordinal' | 'interval'
 type Ratings = (number | null)[][]
 
+interface VoteMeasures {
+  entropy_bits: number
+  van_der_eijk_A: number
+  consensus: number
+}
+
 interface Fixtures {
   'fleiss-1971.json': {
     counts: number[][]
@@ -106,7 +112,14 @@ interface Fixtures {
       }
     >
   }
-  'vote-vectors.json': { vectors: { name: string; counts: number[]; mean: number; population_sd: number }[] }
+  'vote-vectors.json': {
+    vectors: ({ name: string; counts: number[]; mean: number; population_sd: number } & VoteMeasures)[]
+    printed_examples: ({
+      counts: number[]
+      published: { A: number; consensus?: number }
+      where: string
+    } & VoteMeasures)[]
+  }
   'panel.json': {
     krippendorff_alpha: Record<Metric | 'pairable', number>
     pairwise_kappa: { pairs: (Record<Weighting, number> & { pair: string[]; n: number })[] }

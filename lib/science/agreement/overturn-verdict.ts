@@ -1,0 +1,90 @@
+/** What would have changed a verdict by reliability: each grade left out or another, fewer grades, one more, other rates. */
+import { GRADES, type Grade } from '@/lib/science/agreement/grades'
+import type { GraderRates } from '@/lib/science/agreement/lens-model'
+import type { Outcome } from '@/lib/science/agreement/mean-rule'
+import {
+  decideByReliability,
+  type ReliabilityAnswer,
+  type ReliabilityRule,
+} from '@/lib/science/agreement/reliability-rule'
+
+/** What the verdict rests on. */
+export interface VerdictBasis {
+  rule: ReliabilityRule
+  answers: readonly ReliabilityAnswer[]
+  /** inside (0, 1) */
+  lensShare: number
+}
+
+const decideFrom = ({ rule, answers, lensShare }: VerdictBasis) => decideByReliability(rule, answers, lensShare)
+
+/** Outcome and probability without each answer in turn, in the order of the answers. */
+export function withoutEachAnswer(basis: VerdictBasis): { outcome: Outcome; probability: number }[] {
+  return basis.answers.map((_, left) => {
+    const answers = basis.answers.filter((_, at) => at !== left)
+    const { outcome, probability } = decideFrom({ ...basis, answers })
+    return { outcome, probability }
+  })
+}
+
+/** Each answer that would have led to another outcome had the same person given another grade. */
+export function overturningGrades(basis: VerdictBasis): { answer: number; instead: Grade; outcome: Outcome }[] {
+  const now = decideFrom(basis).outcome
+  return basis.answers.flatMap((given, answer) =>
+    GRADES.filter((instead) => instead !== given.grade).flatMap((instead) => {
+      const answers = basis.answers.with(answer, { ...given, grade: instead })
+      const { outcome } = decideFrom({ ...basis, answers })
+      return outcome === now ? [] : [{ answer, instead, outcome }]
+    }),
+  )
+}
+
+/**
+ * The fewest answers without which the outcome is another: those that speak most for it, strongest first.
+ * @returns indexes of answers, or null where leaving out even all of that side changes nothing, or nothing is decided.
+ */
+export function fewestToOverturn(basis: VerdictBasis): number[] | null {
+  const { outcome, weights } = decideFrom(basis)
+  if (outcome !== 'confirmed' && outcome !== 'set aside') return null
+  const side = outcome === 'confirmed' ? 1 : -1
+  const weightOf = (answer: ReliabilityAnswer) =>
+    weights.find(({ grader, grade }) => grader === answer.grader && grade === answer.grade)?.weight ?? 0
+  const strongest = basis.answers
+    .map((answer, at) => ({ at, pull: side * weightOf(answer) }))
+    .filter(({ pull }) => pull > 0)
+    .sort((a, b) => b.pull - a.pull || a.at - b.at)
+  const left: number[] = []
+  for (const { at } of strongest) {
+    left.push(at)
+    const answers = basis.answers.filter((_, answer) => !left.includes(answer))
+    if (decideFrom({ ...basis, answers }).outcome !== outcome) return left
+  }
+  return null
+}
+
+/** What each grade of one more grader would make of it. */
+export function oneMoreGrade(
+  basis: VerdictBasis,
+  next: { grader: string; rates: GraderRates },
+): { grade: Grade; outcome: Outcome; probability: number }[] {
+  return GRADES.map((grade) => {
+    const { outcome, probability } = decideFrom({ ...basis, answers: [...basis.answers, { ...next, grade }] })
+    return { grade, outcome, probability }
+  })
+}
+
+/**
+ * The error rates at which this evidence would just reach each boundary, the other rate unchanged: it is confirmed where
+ * `falseConfirmed` is allowed to be at least the first, and set aside where `missedLens` is at least the second.
+ *   alpha = (1 - beta) e^-evidence,   beta = (1 - alpha) e^evidence
+ * A number of 1 or more means that no rule would.
+ */
+export function errorRatesToDecide(
+  evidence: number,
+  rule: ReliabilityRule,
+): { falseConfirmed: number; missedLens: number } {
+  return {
+    falseConfirmed: (1 - rule.missedLens) * Math.exp(-evidence),
+    missedLens: (1 - rule.falseConfirmed) * Math.exp(evidence),
+  }
+}
