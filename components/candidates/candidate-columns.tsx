@@ -30,9 +30,8 @@ const NAME: TableColumn<CandidateRow> = {
   filter: 'text',
   sortable: true,
   pinned: true,
-  width: 12,
   cell: (row) => (
-    <span className="flex items-center gap-2">
+    <span className="flex items-center gap-1.5">
       <StampThumbnail src={row.thumbnail} name={row.name} />
       <Link
         href={row.href}
@@ -53,13 +52,14 @@ const STATE = (choices: readonly string[]): TableColumn<CandidateRow> => ({
   id: 'state',
   label: 'State',
   filter: choices,
+  filterSpills: true,
   sortable: true,
   cell: (row) =>
     row.state ? <StatePill state={row.state} /> : <span className="text-note text-mute">after your grade</span>,
 })
 
 const JUDGED: readonly TableColumn<CandidateRow>[] = [
-  { id: 'votes', label: 'Grades', cell: (row) => (row.votes ? <VoteStrip votes={row.votes} /> : none) },
+  { id: 'votes', label: 'Grades', cell: (row) => (row.votes ? <VoteStrip votes={row.votes} dense /> : none) },
   {
     id: 'mean',
     label: 'Mean',
@@ -118,7 +118,7 @@ const POSITION: readonly TableColumn<CandidateRow>[] = [
         none
       ) : (
         <CopyText text={String(row.raDeg)} what="right ascension in degrees">
-          {row.raDeg.toFixed(6)}
+          {row.raDeg.toFixed(5)}
         </CopyText>
       ),
   },
@@ -132,7 +132,7 @@ const POSITION: readonly TableColumn<CandidateRow>[] = [
         none
       ) : (
         <CopyText text={String(row.decDeg)} what="declination in degrees">
-          {row.decDeg.toFixed(6).replace('-', '−')}
+          {row.decDeg.toFixed(5).replace('-', '−')}
         </CopyText>
       ),
   },

@@ -55,7 +55,7 @@ export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
       <div className="flex h-[76dvh] min-h-0 flex-col md:h-auto md:flex-1">
         <DataTable
           label="Candidates"
-          noun={['candidate', 'candidates']}
+          noun="candidates"
           columns={CANDIDATE_COLUMNS[role]}
           rows={linked}
           rowId={(row) => String(row.id)}

@@ -23,13 +23,13 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
   {
     id: 'designation',
     label: 'Designation',
-    value: (row) => row.designation ?? row.name,
+    title: 'Designation and name',
+    value: (row) => (row.designation ? `${row.designation} ${row.name}` : row.name),
     filter: 'text',
     sortable: true,
     pinned: true,
-    width: 16.5,
     cell: (row) => (
-      <span className="flex items-center gap-2">
+      <span className="flex items-center gap-1.5">
         <StampThumbnail src={row.thumbnail} name={row.name} />
         <Link
           href={row.href}
@@ -39,19 +39,6 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
           {row.designation ?? row.name}
         </Link>
         {row.designation ? <CopyButton text={row.designation} what="designation" /> : null}
-      </span>
-    ),
-  },
-  {
-    id: 'name',
-    label: 'Name',
-    title: 'Name in the campaign',
-    value: (row) => row.name,
-    filter: 'text',
-    sortable: true,
-    cell: (row) => (
-      <span className="block max-w-40 truncate" title={row.name}>
-        {row.name}
       </span>
     ),
   },
@@ -100,7 +87,30 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
   {
     id: 'votes',
     label: 'Grades',
-    cell: (row) => <VoteStrip votes={row.votes} />,
+    cell: (row) => <VoteStrip votes={row.votes} dense />,
+  },
+  {
+    id: 'decided',
+    label: 'Decided',
+    title: 'Decided by',
+    value: (row) => row.decidedBy,
+    filter: ['verdict', 'ruling'],
+    sortable: true,
+    cell: (row) => row.decidedBy,
+  },
+  {
+    id: 'entered',
+    label: 'Entered',
+    title: 'Entered the catalogue, UTC',
+    value: (row) => row.enteredAt,
+    filter: 'text',
+    sortable: true,
+    largestFirst: true,
+    cell: (row) => (
+      <time dateTime={row.enteredAt} title={row.enteredAt} className="figures text-note">
+        {row.enteredAt.slice(0, 10)}
+      </time>
+    ),
   },
   {
     id: 'ra',
@@ -134,7 +144,7 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
         none
       ) : (
         <CopyText text={String(row.raDeg)} what="right ascension in degrees">
-          {row.raDeg.toFixed(6)}
+          {row.raDeg.toFixed(5)}
         </CopyText>
       ),
   },
@@ -151,30 +161,22 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
         none
       ) : (
         <CopyText text={String(row.decDeg)} what="declination in degrees">
-          {row.decDeg.toFixed(6).replace('-', '−')}
+          {row.decDeg.toFixed(5).replace('-', '−')}
         </CopyText>
       ),
   },
   {
-    id: 'decided',
-    label: 'Decided by',
-    value: (row) => row.decidedBy,
-    filter: ['verdict', 'ruling'],
-    sortable: true,
-    cell: (row) => row.decidedBy,
-  },
-  {
-    id: 'entered',
-    label: 'Entered',
-    title: 'Entered the catalogue, UTC',
-    value: (row) => row.enteredAt,
+    id: 'name',
+    label: 'Name',
+    title: 'Name in the campaign',
+    value: (row) => row.name,
     filter: 'text',
     sortable: true,
-    largestFirst: true,
+    hidden: true,
     cell: (row) => (
-      <time dateTime={row.enteredAt} title={row.enteredAt} className="figures text-note">
-        {row.enteredAt.slice(0, 10)}
-      </time>
+      <span className="block max-w-40 truncate" title={row.name}>
+        {row.name}
+      </span>
     ),
   },
   {

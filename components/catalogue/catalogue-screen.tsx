@@ -34,7 +34,7 @@ export function CatalogueScreen({ slug, catalogue, classRule, next }: CatalogueS
   return (
     <div className="flex flex-col gap-3 px-4 py-4 md:h-dvh md:px-6 md:py-5">
       <header className="flex flex-wrap items-start gap-x-6 gap-y-3">
-        <div className="mr-auto max-w-3xl">
+        <div className="mr-auto">
           <h1 className="text-title font-semibold">
             {all.toLocaleString('en')} confirmed {all === 1 ? 'candidate' : 'candidates'}
           </h1>

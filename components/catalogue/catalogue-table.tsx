@@ -14,7 +14,7 @@ export function CatalogueTable({ slug, rows }: { slug: string; rows: readonly Ca
   return (
     <DataTable
       label="Confirmed candidates"
-      noun={['entry', 'entries']}
+      noun="entries"
       columns={CATALOGUE_COLUMNS}
       rows={linked}
       rowId={(row) => String(row.id)}

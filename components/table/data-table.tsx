@@ -15,8 +15,8 @@ import { useTableState } from './use-table-state'
 interface DataTableProps<Row> {
   /** What the rows are, for those who cannot see the table: 'Confirmed candidates'. */
   label: string
-  /** What one row and several are called in counts. */
-  noun: [one: string, several: string]
+  /** What several rows are called in counts. */
+  noun: string
   columns: readonly TableColumn<Row>[]
   rows: readonly Row[]
   rowId: (row: Row) => string
@@ -36,6 +36,16 @@ function moveBetweenRows(event: KeyboardEvent<HTMLTableSectionElement>) {
   if (!link) return
   event.preventDefault()
   link.focus()
+}
+
+/** `by mean grade, falling`. An order that no column stands for is that of arrival. */
+function describeOrder<Row>(columns: readonly TableColumn<Row>[], sort: readonly TableSort[]): string {
+  const parts = sort.map(({ id, descending }) => {
+    const column = columns.find((one) => one.id === id)
+    if (!column) return 'in the order of arrival'
+    return `by ${(column.title ?? column.label).split(',')[0].toLowerCase()}, ${descending ? 'falling' : 'rising'}`
+  })
+  return parts.join(', then ')
 }
 
 /**
@@ -87,10 +97,9 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
   return (
     <div className="flex min-h-0 flex-1 flex-col gap-2">
       <div className="flex flex-wrap items-center gap-x-3 gap-y-2">
-        <p role="status" className="mr-auto text-small text-mute">
-          {count === all
-            ? `${all.toLocaleString('en')} ${noun[all === 1 ? 0 : 1]}`
-            : `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun[all === 1 ? 0 : 1]}`}
+        <p role="status" className="mr-auto text-small text-mute first-letter:uppercase">
+          {filterCount > 0 ? `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun}, ` : ''}
+          {describeOrder(columns, state.sort)}
           {isPending ? ' · reading…' : ''}
         </p>
         {filterCount > 0 ? <ToolButton onClick={() => update({ filters: {} })}>Clear filters</ToolButton> : null}

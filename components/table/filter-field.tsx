@@ -9,7 +9,7 @@ import { chosenOf } from './table-state'
 const PAUSE_MS = 250
 
 const BOX =
-  'h-7 w-full min-w-16 rounded-key border border-edge/50 bg-well px-1.5 text-note font-normal text-text placeholder:text-mute aria-invalid:border-alarm'
+  'h-7 w-full min-w-12 rounded-key border border-edge/50 bg-well px-1.5 text-note font-normal text-text placeholder:text-mute aria-invalid:border-alarm'
 
 interface FilterFieldProps<Row> {
   column: TableColumn<Row>
@@ -28,14 +28,14 @@ export function FilterField<Row>({ column, value, onChange }: FilterFieldProps<R
       onChange(column.id, wanted.join(','))
     }
     return (
-      <span role="group" aria-label={name} className="flex gap-1">
+      <span role="group" aria-label={name} className={`relative z-10 flex gap-1 ${column.filterSpills ? 'w-0' : ''}`}>
         {column.filter.map((choice) => (
           <button
             key={choice}
             type="button"
             aria-pressed={chosen.includes(choice)}
             onClick={() => toggle(choice)}
-            className="h-7 min-w-6 whitespace-nowrap rounded-key border border-edge/50 px-1.5 text-note text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text"
+            className="h-7 min-w-6 shrink-0 whitespace-nowrap rounded-key border border-edge/50 px-1.5 text-note text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text"
           >
             {choice}
           </button>
@@ -79,14 +79,14 @@ function TypedFilter({ name, range, value, onChange }: TypedFilterProps) {
   const unclear = range && text.trim() !== '' && parseNumberRange(text) === null
   return (
     <input
-      type="search"
+      type="text"
       aria-label={name}
       aria-invalid={unclear || undefined}
       title={range ? 'A number, or a range such as 2..3, >2 or <=3' : undefined}
-      placeholder={range ? 'e.g. 2..3' : 'contains'}
+      placeholder={range ? '2..3' : 'contains'}
       value={text}
       onChange={(event) => setText(event.target.value)}
-      className={`${BOX} ${range ? 'figures' : ''}`}
+      className={`${BOX} ${range ? 'figures text-right' : ''}`}
     />
   )
 }

@@ -26,20 +26,19 @@ export function HeadCell<Row extends RowData>({ column, head }: HeadCellProps<Ro
     <th
       scope="col"
       aria-sort={column.sortable ? order : undefined}
-      style={column.width ? { minWidth: `${column.width}rem` } : undefined}
       className={`h-row whitespace-nowrap border-b border-line bg-page px-2 text-note font-semibold ${column.numeric ? 'text-right' : 'text-left'} ${sorted ? 'text-text' : 'text-mute'} ${column.pinned ? PINNED : ''}`}
     >
       {column.sortable ? (
         <button
           type="button"
           onClick={head.getToggleSortingHandler()}
-          className={`group/head inline-flex min-h-6 items-center gap-1 rounded-key hover:text-text ${column.numeric ? 'flex-row-reverse' : ''}`}
+          className="group/head relative inline-flex min-h-6 min-w-6 items-center justify-center rounded-key hover:text-text"
         >
           {text}
           <Arrow
-            size={13}
+            size={11}
             aria-hidden="true"
-            className={sorted ? '' : 'opacity-0 group-hover/head:opacity-50 group-focus-visible/head:opacity-50'}
+            className={`absolute ${column.numeric ? '-left-3' : '-right-3'} ${sorted ? '' : 'opacity-0 group-hover/head:opacity-50 group-focus-visible/head:opacity-50'}`}
           />
         </button>
       ) : (

@@ -6,7 +6,7 @@ import { createPortal } from 'react-dom'
 const SIDE = 208
 const GAP = 12
 
-/** A stamp as high as a row, and large beside the pointer while it rests there. */
+/** The middle of a stamp as high as a row; the whole of it, large, beside the pointer while that rests there. */
 export function StampThumbnail({ src, name }: { src: string | null; name: string }) {
   const [place, setPlace] = useState<{ left: number; top: number } | null>(null)
   if (!src) return <span className="block size-7 rounded-key bg-tray" title="No picture yet" />
@@ -17,11 +17,19 @@ export function StampThumbnail({ src, name }: { src: string | null; name: string
     })
   return (
     <span
-      className="block size-7 shrink-0 bg-tray"
+      className="block size-7 shrink-0 overflow-hidden bg-tray"
       onPointerEnter={(event) => event.pointerType === 'mouse' && show(event.currentTarget.getBoundingClientRect())}
       onPointerLeave={() => setPlace(null)}
     >
-      <img src={src} alt="" width={28} height={28} loading="lazy" decoding="async" className="size-7 object-contain" />
+      <img
+        src={src}
+        alt=""
+        width={28}
+        height={28}
+        loading="lazy"
+        decoding="async"
+        className="size-7 scale-160 object-contain"
+      />
       {place
         ? createPortal(
             <img

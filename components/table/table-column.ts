@@ -15,6 +15,8 @@ export interface TableColumn<Row> {
   value?: (row: Row) => string | number | undefined
   cell: (row: Row) => ReactNode
   filter?: ColumnFilterKind
+  /** The next column has no filter, and this one's may take its room too. */
+  filterSpills?: boolean
   sortable?: boolean
   /** The first click sorts from the largest down. */
   largestFirst?: boolean
@@ -23,6 +25,4 @@ export interface TableColumn<Row> {
   hidden?: boolean
   /** The column that names the row: always shown, and kept in sight. */
   pinned?: boolean
-  /** rem */
-  width?: number
 }

@@ -26,26 +26,33 @@ export function describeVotes(votes: Votes): string {
   return parts.length ? `Grades: ${parts.join(', ')}` : 'No grades yet'
 }
 
-export function VoteStrip({ votes }: { votes: Votes }) {
+/** `dense` is for rows of a table: smaller dots in cells of one width, so that the letters stand below each other. */
+export function VoteStrip({ votes, dense = false }: { votes: Votes; dense?: boolean }) {
+  const pad = dense ? 'px-0.5' : 'gap-1 px-1'
+  const size = dense ? 'size-1.5' : 'size-2'
   return (
     <div role="img" aria-label={describeVotes(votes)} className="flex items-center gap-1.5">
-      <div className="grid min-w-44 flex-1 grid-cols-4 gap-0.5">
+      <div className={`grid grid-cols-4 gap-0.5 ${dense ? 'w-50 shrink-0' : 'min-w-44 flex-1'}`}>
         {CELLS.map(({ letter, dot, cell }) => (
-          <div key={letter} className={`flex h-[1.375rem] items-center gap-1 px-1 ${cell}`}>
+          <div key={letter} className={`flex h-[1.375rem] items-center ${pad} ${cell}`}>
             <span className="w-2.5 text-[0.6875rem] leading-none text-mute">{letter}</span>
-            <span className="flex flex-1 items-center justify-center gap-0.5">
+            <span className={`flex flex-1 items-center justify-center ${dense ? 'gap-px' : 'gap-0.5'}`}>
               {votes[letter] > MOST_DOTS ? (
                 <span className="figures text-note leading-none">{votes[letter]}</span>
               ) : (
                 Array.from({ length: votes[letter] }, (_, index) => (
-                  <i key={index} className={`size-2 rounded-full ring-1 ring-edge/70 ${dot}`} />
+                  <i key={index} className={`${size} rounded-full ring-1 ring-edge/70 ${dot}`} />
                 ))
               )}
             </span>
           </div>
         ))}
       </div>
-      {votes.U ? <span className="figures text-note text-mute">+{votes.U}?</span> : null}
+      {votes.U || dense ? (
+        <span className={`figures text-note text-mute ${dense ? 'w-6 text-left' : ''}`}>
+          {votes.U ? `+${votes.U}?` : ''}
+        </span>
+      ) : null}
     </div>
   )
 }

@@ -54,11 +54,21 @@ export async function* catalogueEntries(
     const rows = await listEntriesAfter(db, scope, { afterId, limit: PAGE })
     if (rows.length === 0) return
     const ids = rows.map((row) => row.id)
-    const answers = Map.groupBy(await listEntryAnswers(db, scope.campaignId, ids), (answer) => answer.candidateId)
+    const answers = byCandidate(await listEntryAnswers(db, scope.campaignId, ids))
     yield rows.map((row) => entryOf(row, answers.get(row.id) ?? []))
     if (rows.length < PAGE) return
     afterId = ids[ids.length - 1]
   }
+}
+
+function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryAnswer[]> {
+  const groups = new Map<number, EntryAnswer[]>()
+  for (const answer of answers) {
+    const group = groups.get(answer.candidateId)
+    if (group) group.push(answer)
+    else groups.set(answer.candidateId, [answer])
+  }
+  return groups
 }
 
 function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry {

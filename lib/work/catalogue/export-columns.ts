@@ -47,7 +47,7 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
     name: 'grade_class',
     datatype: 'char',
     ucd: 'meta.code.class',
-    description: `Class of the visual grade. ${GRADE_CLASS_RULE}`,
+    description: `Class of the visual grade: ${GRADE_CLASS_RULE}`,
     value: (entry) => entry.gradeClass,
   },
   {

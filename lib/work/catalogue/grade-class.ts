@@ -11,7 +11,7 @@ export const LEAST_MEAN_OF_CLASS = { A: 2.5, B: 1.5 } as const
 
 /** In words, for the page and for what is exported. */
 export const GRADE_CLASS_RULE =
-  `The grade of the lead's ruling where it names one; else by the mean of the grade points: ` +
+  `the grade that a lead ruled, else by the mean of the grade points: ` +
   `A from ${LEAST_MEAN_OF_CLASS.A}, B from ${LEAST_MEAN_OF_CLASS.B}, C below`
 
 /**

@@ -1,0 +1,122 @@
+import { afterEach, beforeEach, expect, it } from 'vitest'
+import { addCalibrationCandidate, addJudgedCandidate } from '@/tests/_support/judged-candidate'
+import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
+import { candidateTable, type CandidateTableInput } from './candidate-table'
+
+let scenario: Scenario
+beforeEach(async () => {
+  scenario = await makeScenario({ gradesWanted: 4, leastGrades: 3 })
+})
+afterEach(() => scenario.db.destroy())
+
+async function tableFor(viewer: Scenario['lead'], input: Partial<CandidateTableInput> = {}) {
+  const permit = await scenario.permit(viewer, 'read')
+  return candidateTable(scenario.db, permit, {
+    filter: {},
+    order: 'id',
+    descending: false,
+    page: 0,
+    pageSize: 100,
+    ...input,
+  })
+}
+
+const names = (table: Awaited<ReturnType<typeof tableFor>>) => table.rows.map((row) => row.name)
+
+it('sorts by mean with what has none last, both ways', async () => {
+  await addJudgedCandidate(scenario, 'middle', { grades: 'BBB' })
+  await addImagedCandidate(scenario.db, scenario.campaign, 'none')
+  await addJudgedCandidate(scenario, 'best', { grades: 'AAA' })
+  await addJudgedCandidate(scenario, 'worst', { grades: 'NNN' })
+  expect(names(await tableFor(scenario.lead, { order: 'mean', descending: true }))).toEqual([
+    'best',
+    'middle',
+    'worst',
+    'none',
+  ])
+  expect(names(await tableFor(scenario.lead, { order: 'mean' }))).toEqual(['worst', 'middle', 'best', 'none'])
+})
+
+it('does not let the order by mean or state give away what a grader has not judged', async () => {
+  const grader = scenario.graders[0]
+  await addJudgedCandidate(scenario, 'withheld worst', { grades: ' NNN' })
+  await addJudgedCandidate(scenario, 'withheld best', { grades: ' AAA' })
+  await addJudgedCandidate(scenario, 'own', { grades: 'BBB ' })
+  for (const order of ['mean', 'spread', 'state'] as const) {
+    expect(names(await tableFor(grader, { order }))).toEqual(['own', 'withheld worst', 'withheld best'])
+  }
+})
+
+it('finds by part of the name, taking % and _ for themselves', async () => {
+  for (const name of ['SWS 10%', 'SWS 100', 'sws_1']) await addImagedCandidate(scenario.db, scenario.campaign, name)
+  expect(names(await tableFor(scenario.lead, { filter: { name: 'sws' } }))).toHaveLength(3)
+  expect(names(await tableFor(scenario.lead, { filter: { name: '10%' } }))).toEqual(['SWS 10%'])
+  expect(names(await tableFor(scenario.lead, { filter: { name: '_' } }))).toEqual(['sws_1'])
+})
+
+it('counts what passes the filter and all there is, and pages through it', async () => {
+  for (const name of ['a1', 'a2', 'a3', 'b1']) await addImagedCandidate(scenario.db, scenario.campaign, name)
+  const second = await tableFor(scenario.lead, { filter: { name: 'a' }, page: 1, pageSize: 2 })
+  expect(second).toMatchObject({ count: 3, all: 4 })
+  expect(names(second)).toEqual(['a3'])
+})
+
+it('keeps grades and state of what a grader has not judged out of the row, and finds those by what is withheld', async () => {
+  await addJudgedCandidate(scenario, 'own', { grades: 'AAA ' })
+  await addJudgedCandidate(scenario, 'other', { grades: ' AAA' })
+  const { rows } = await tableFor(scenario.graders[0])
+  expect(rows.map(({ state, votes }) => [state, votes])).toEqual([
+    ['confirmed', { A: 3, B: 0, C: 0, N: 0, U: 0 }],
+    [null, null],
+  ])
+  expect(names(await tableFor(scenario.graders[0], { filter: { withheld: true } }))).toEqual(['other'])
+  expect(names(await tableFor(scenario.graders[0], { filter: { states: ['confirmed'] } }))).toEqual(['own'])
+  expect((await tableFor(scenario.graders[0], { filter: { states: ['confirmed'] } })).count).toBe(1)
+})
+
+it('sorts by score and filters calibration for leads, and passes both over for others', async () => {
+  await addImagedCandidate(scenario.db, scenario.campaign, 'low')
+  await addImagedCandidate(scenario.db, scenario.campaign, 'high')
+  await addCalibrationCandidate(scenario, 'calibration')
+  await scenario.db.updateTable('candidate').set({ score: 0.9 }).where('name', '=', 'high').execute()
+  await scenario.db.updateTable('candidate').set({ score: 0.1 }).where('name', '=', 'low').execute()
+  const byScore = { order: 'score', descending: true } as const
+  expect(names(await tableFor(scenario.lead, byScore))).toEqual(['high', 'low', 'calibration'])
+  expect(names(await tableFor(scenario.graders[0], { ...byScore, descending: false }))).toEqual([
+    'low',
+    'high',
+    'calibration',
+  ])
+  expect(names(await tableFor(scenario.lead, { filter: { calibration: true } }))).toEqual(['calibration'])
+  expect(names(await tableFor(scenario.graders[0], { filter: { calibration: true } }))).toHaveLength(3)
+})
+
+it('gives each row its colour stamp by the newest recipe', async () => {
+  const id = await addImagedCandidate(scenario.db, scenario.campaign, 'pictured')
+  const recipe = await scenario.db.selectFrom('recipe').select('id').executeTakeFirstOrThrow()
+  for (const [view, digit] of [
+    ['deep', 'a'],
+    ['colour', 'b'],
+  ]) {
+    await scenario.db
+      .insertInto('stamp')
+      .values({
+        campaign_id: scenario.campaign.id,
+        candidate_id: id,
+        recipe_id: recipe.id,
+        view,
+        sha256: digit.repeat(64),
+        bytes: 1,
+        width: 1,
+        height: 1,
+        note: null,
+      })
+      .execute()
+  }
+  const { rows } = await tableFor(scenario.lead)
+  expect(rows[0].thumbnail).toBe(`/api/campaigns/${scenario.campaign.slug}/stamps/${'b'.repeat(64)}`)
+})
+
+it('is closed to strangers', async () => {
+  await expect(tableFor(scenario.stranger)).rejects.toMatchObject({ status: 404 })
+})
