@@ -21,13 +21,13 @@ async function gradedCase() {
   await giveGrade(db, campaign, id, graders[2], 'C', { occasion: 'repeat' })
   const lead = await scenario.permit(scenario.lead, 'lead')
   await runConsensus(db, lead)
-  return { ...scenario, id, leads: lead }
+  return { ...scenario, id, leads: lead, leadReads: await scenario.permit(scenario.lead, 'read') }
 }
 
 describe('the evidence of a candidate', () => {
   it('shows a lead every counted grade with the name, the verdict with its rule, and what caused the state', async () => {
-    const { db, id, leads } = await gradedCase()
-    const { judgement } = await candidateEvidence(db, leads, id)
+    const { db, id, leadReads } = await gradedCase()
+    const { judgement } = await candidateEvidence(db, leadReads, id)
     expect(judgement?.votes).toEqual({ A: 2, B: 0, C: 0, N: 1, U: 0 })
     expect(judgement?.grades.map(({ by, grade }) => `${by} ${grade}`)).toEqual(['dunlin A', 'plover A', 'curlew N'])
     expect(judgement?.grades[2]).toMatchObject({ tags: ['merger'], remark: 'Tidal tail?', seconds: 8.5 })
@@ -49,10 +49,10 @@ describe('the evidence of a candidate', () => {
 
   it('is withheld from a grader who has not judged it, and shown with pseudonyms to one who has', async () => {
     const { db, id, graders, permit } = await gradedCase()
-    const blind = await candidateEvidence(db, await permit(graders[4], 'grade'), id)
+    const blind = await candidateEvidence(db, await permit(graders[4], 'read'), id)
     expect(blind.judgement).toBeNull()
     expect(JSON.stringify(blind)).not.toMatch(/split|merger|Tidal|mean/)
-    const seen = await candidateEvidence(db, await permit(graders[0], 'grade'), id)
+    const seen = await candidateEvidence(db, await permit(graders[0], 'read'), id)
     expect(seen.judgement?.grades.map(({ by, own }) => [by, own])).toEqual([
       ['G03', false],
       ['G04', false],
@@ -61,22 +61,22 @@ describe('the evidence of a candidate', () => {
   })
 
   it('never carries the truth of a calibration candidate; that it is one is told to leads only', async () => {
-    const { db, campaign, graders, reader, permit, leads } = await gradedCase()
+    const { db, campaign, graders, reader, permit, leadReads } = await gradedCase()
     const known = await addImagedCandidate(db, campaign, 'known')
     await db.updateTable('candidate').set({ truth: 'not a lens' }).where('id', '=', known).execute()
     await giveGrade(db, campaign, known, graders[0], 'A')
-    const readers = [await permit(reader, 'read'), await permit(graders[0], 'grade')]
-    for (const reads of [leads, ...readers]) {
+    const readers = [await permit(reader, 'read'), await permit(graders[0], 'read')]
+    for (const reads of [leadReads, ...readers]) {
       const evidence = await candidateEvidence(db, reads, known)
       expect(JSON.stringify(evidence)).not.toContain('not a lens')
-      expect(evidence.judgement?.calibration).toBe(reads === leads)
+      expect(evidence.judgement?.calibration).toBe(reads === leadReads)
     }
   })
 
   it('is not found in another campaign', async () => {
-    const { db, otherCampaign, leads } = await gradedCase()
+    const { db, otherCampaign, leadReads } = await gradedCase()
     const there = await addImagedCandidate(db, otherCampaign, 'there')
-    await expect(candidateEvidence(db, leads, there)).rejects.toMatchObject({ status: 404 })
+    await expect(candidateEvidence(db, leadReads, there)).rejects.toMatchObject({ status: 404 })
   })
 })
 

@@ -17,6 +17,8 @@ export interface SplitCase {
   picture: PictureView | null
 }
 
+export type { RecentRuling }
+
 export interface Splits {
   /** Of the whole campaign; `cases` holds the first of them. */
   total: number

@@ -1,0 +1,31 @@
+import type { Metadata } from 'next'
+import { notFound } from 'next/navigation'
+import { permitPage } from '@/app/_lib/page-permit'
+import { EvidenceScreen } from '@/components/evidence/evidence-screen'
+import { Problem } from '@/lib/platform/problems/problem'
+import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
+import { neighboursOf } from '@/lib/work/rulings/find-neighbours'
+import { ruleOnCandidateAction } from './actions'
+
+export const metadata: Metadata = { title: 'Candidate' }
+
+/** Every member; what others made of a candidate is withheld from a grader who has not graded it. */
+export default async function CandidatePage({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
+  const { slug, id: text } = await params
+  if (!/^\d{1,15}$/.test(text)) notFound()
+  const id = Number(text)
+  const { db, permit } = await permitPage(slug, 'read', `/candidates/${id}`)
+  const evidence = await candidateEvidence(db, permit, id).catch((error: unknown) => {
+    if (error instanceof Problem && error.status === 404) notFound()
+    throw error
+  })
+  return (
+    <EvidenceScreen
+      key={id}
+      slug={slug}
+      evidence={evidence}
+      neighbours={await neighboursOf(db, permit, id)}
+      ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}
+    />
+  )
+}

@@ -1,0 +1,173 @@
+'use client'
+
+import Link from 'next/link'
+import { useState, type ReactNode } from 'react'
+import { counted, moment } from '@/components/campaigns/in-words'
+import type { FormAction } from '@/components/people/use-kept-form'
+import { CopyText } from '@/components/table/copy-text'
+import { ButtonLink } from '@/components/ui/button'
+import { Notice, VisualGradeCaution } from '@/components/ui/notice'
+import { StatePill } from '@/components/ui/state-pill'
+import { VoteStrip } from '@/components/ui/vote-strip'
+import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
+import { CandidateFacts } from './candidate-facts'
+import { GradeList } from './grade-list'
+import { Position } from './position'
+import { RulingForm } from './ruling-form'
+import { RulingList, StateHistory } from './ruling-record'
+import { VerdictArithmetic } from './verdict-arithmetic'
+import { ViewsTray } from './views-tray'
+
+interface Neighbour {
+  id: number
+  name: string
+}
+
+export interface EvidenceScreenProps {
+  slug: string
+  evidence: CandidateEvidence
+  neighbours: { previous: Neighbour | null; next: Neighbour | null }
+  /** For leads: rules on this candidate. */
+  ruleAction: FormAction | null
+}
+
+function Section({ title, children }: { title: string; children: ReactNode }) {
+  return (
+    <section className="flex flex-col gap-2.5">
+      <h2 className="text-small font-semibold text-mute">{title}</h2>
+      {children}
+    </section>
+  )
+}
+
+/** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
+export function EvidenceScreen({ slug, evidence, neighbours, ruleAction }: EvidenceScreenProps) {
+  const [view, setView] = useState(0)
+  const { judgement } = evidence
+  return (
+    <div className="mx-auto flex max-w-6xl flex-col gap-6 px-4 py-5 md:px-8 md:py-6">
+      <Neighbours slug={slug} {...neighbours} />
+      <header className="flex flex-col gap-2">
+        <div className="flex flex-wrap items-center gap-x-4 gap-y-1">
+          <h1 className="figures text-display font-semibold [overflow-wrap:anywhere]">{evidence.name}</h1>
+          {judgement ? <StatePill state={judgement.state} /> : null}
+        </div>
+        {judgement?.designation ? (
+          <p className="figures">
+            <CopyText text={judgement.designation} what="designation" />
+            {judgement.state === 'confirmed' ? null : (
+              <span className="font-sans text-note text-mute">
+                {' '}
+                its name while it was in the catalogue, kept for it
+              </span>
+            )}
+          </p>
+        ) : null}
+        <Position raDeg={evidence.raDeg} decDeg={evidence.decDeg} />
+        {judgement ? <StateReason judgement={judgement} /> : null}
+      </header>
+      <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_22rem]">
+        <div className="flex min-w-0 flex-col gap-6">
+          <ViewsTray name={evidence.name} pictures={evidence.pictures} chosen={view} onChoose={setView} keys={false} />
+          <CandidateFacts evidence={evidence} />
+        </div>
+        <div className="flex min-w-0 flex-col gap-7">
+          {judgement ? <JudgementColumn judgement={judgement} /> : <Withheld slug={slug} />}
+          {judgement && ruleAction ? (
+            <Section title="Rule on it">
+              {judgement.calibration ? (
+                <Notice>This is a calibration stamp: its truth is known, so it is never ruled on.</Notice>
+              ) : (
+                <RulingForm
+                  action={ruleAction}
+                  standing={judgement.standingRuling}
+                  lastRulingId={judgement.rulings[0]?.id ?? null}
+                />
+              )}
+            </Section>
+          ) : null}
+        </div>
+      </div>
+      <VisualGradeCaution />
+    </div>
+  )
+}
+
+function StateReason({ judgement }: { judgement: Judgement }) {
+  const nameless = judgement.state === 'confirmed' && judgement.designation === null
+  return (
+    <div className="flex max-w-prose flex-col gap-1 text-mute">
+      <p className="[overflow-wrap:anywhere]">{judgement.stateReason}</p>
+      {judgement.history.length > 0 ? (
+        <p className="text-note">
+          {judgement.state} since {moment(judgement.stateSince)}
+        </p>
+      ) : null}
+      {nameless ? (
+        <Notice>
+          It is confirmed, but has no designation yet: that takes a position, from a header or a manifest.
+        </Notice>
+      ) : null}
+    </div>
+  )
+}
+
+function JudgementColumn({ judgement }: { judgement: Judgement }) {
+  return (
+    <>
+      <Section title={counted(judgement.grades.length, 'answer')}>
+        <VoteStrip votes={judgement.votes} />
+        <GradeList grades={judgement.grades} />
+      </Section>
+      <Section title="The verdict and its sum">
+        <VerdictArithmetic verdict={judgement.verdict} grades={judgement.grades} />
+      </Section>
+      <Section title={judgement.rulings.length > 0 ? counted(judgement.rulings.length, 'ruling') : 'Rulings'}>
+        <RulingList rulings={judgement.rulings} standing={judgement.standingRuling} />
+      </Section>
+      <Section title="How its state changed">
+        <StateHistory history={judgement.history} />
+      </Section>
+    </>
+  )
+}
+
+function Withheld({ slug }: { slug: string }) {
+  return (
+    <div className="flex flex-col items-start gap-3 rounded-tray border border-dashed border-edge/60 px-5 py-6">
+      <h2 className="text-title font-semibold">Your eyes first</h2>
+      <p className="text-mute">
+        The grades of others, the verdict and the state are shown here once you have graded this candidate yourself, so
+        that nobody’s judgement sways yours. ‘Cannot judge’ does not open them.
+      </p>
+      <ButtonLink tone="lamp" href={`/campaigns/${slug}/bench`}>
+        To the bench
+      </ButtonLink>
+    </div>
+  )
+}
+
+function Neighbours({ slug, previous, next }: { slug: string; previous: Neighbour | null; next: Neighbour | null }) {
+  const link = (to: Neighbour, text: string) => (
+    <Link
+      href={`/campaigns/${slug}/candidates/${to.id}`}
+      className="figures min-h-6 truncate decoration-edge underline-offset-4 hover:text-text hover:underline"
+    >
+      {text}
+    </Link>
+  )
+  return (
+    <nav aria-label="Candidates" className="flex items-center justify-between gap-4 text-note text-mute">
+      <Link
+        href={`/campaigns/${slug}/candidates`}
+        className="min-h-6 whitespace-nowrap decoration-edge underline-offset-4 hover:text-text hover:underline"
+      >
+        All candidates
+      </Link>
+      <span className="flex min-w-0 gap-5">
+        {previous ? link(previous, `← ${previous.name}`) : null}
+        {next ? link(next, `${next.name} →`) : null}
+      </span>
+    </nav>
+  )
+}

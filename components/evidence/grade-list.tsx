@@ -1,0 +1,53 @@
+import type { GradeLetter } from '@/db/schema/grading'
+import type { EvidenceGrade } from '@/lib/work/rulings/candidate-evidence'
+
+const LETTER: Record<GradeLetter, string> = {
+  A: 'text-letter-a',
+  B: 'text-letter-b',
+  C: 'text-letter-c',
+  N: 'text-letter-n',
+  U: 'text-mute',
+}
+
+const MEANING: Record<GradeLetter, string> = {
+  A: 'sure lens',
+  B: 'probable',
+  C: 'possible',
+  N: 'not a lens',
+  U: 'cannot judge',
+}
+
+/** Every grade that counts: who, how long they looked, what they saw and what they said. */
+export function GradeList({ grades }: { grades: EvidenceGrade[] }) {
+  if (grades.length === 0) return <p className="text-small text-mute">Nobody has graded it yet.</p>
+  return (
+    <ul className="border-t border-line">
+      {grades.map((grade) => (
+        <li key={grade.id} className="grid grid-cols-[1.75rem_minmax(0,1fr)_auto] gap-x-1 border-b border-line py-2">
+          <span
+            className={`row-span-2 text-lg font-bold leading-6 ${LETTER[grade.grade]}`}
+            aria-label={`${grade.grade}, ${MEANING[grade.grade]}`}
+          >
+            {grade.grade === 'U' ? '?' : grade.grade}
+          </span>
+          <span className="truncate">
+            {grade.by}
+            {grade.own ? <span className="text-mute"> (you)</span> : null}
+            {grade.occasion === 'asked' ? <span className="text-note text-mute">, asked for another look</span> : null}
+          </span>
+          <span className="figures text-small text-mute">
+            {grade.seconds === null
+              ? ''
+              : `${grade.seconds < 10 ? grade.seconds.toFixed(1) : Math.round(grade.seconds)} s`}
+          </span>
+          {grade.grade === 'U' || grade.tags.length > 0 || grade.remark ? (
+            <p className="col-start-2 text-note text-mute [overflow-wrap:anywhere]">
+              {[grade.grade === 'U' ? MEANING.U : '', ...grade.tags].filter(Boolean).join(', ')}
+              {grade.remark ? <span className="block whitespace-pre-line text-text">“{grade.remark}”</span> : null}
+            </p>
+          ) : null}
+        </li>
+      ))}
+    </ul>
+  )
+}

@@ -1,0 +1,127 @@
+'use client'
+
+import Link from 'next/link'
+import type { RefObject } from 'react'
+import { counted } from '@/components/campaigns/in-words'
+import { GradeList } from '@/components/evidence/grade-list'
+import { Position } from '@/components/evidence/position'
+import { arithmeticInWords, thresholdsInWords } from '@/components/evidence/verdict-arithmetic'
+import { RulingForm } from '@/components/evidence/ruling-form'
+import { RulingList } from '@/components/evidence/ruling-record'
+import { ViewsTray } from '@/components/evidence/views-tray'
+import type { FormAction } from '@/components/people/use-kept-form'
+import { Notice } from '@/components/ui/notice'
+import { StatePill } from '@/components/ui/state-pill'
+import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
+import type { RulingChoice } from '@/lib/work/rulings/ruling-input'
+
+export interface CaseControls {
+  view: number
+  onView: (index: number) => void
+  choice: RulingChoice | null
+  onChoose: (choice: RulingChoice) => void
+  reasonRef: RefObject<HTMLTextAreaElement | null>
+  keys: boolean
+}
+
+/** One case: everything needed to rule on it in one place, and the ruling at the bottom. */
+export function SplitCase({
+  slug,
+  evidence,
+  judgement,
+  decides,
+  nextId,
+  action,
+  controls,
+}: {
+  slug: string
+  evidence: CandidateEvidence
+  judgement: Judgement
+  /** What would decide it, in sentences. */
+  decides: string[]
+  nextId: number | null
+  action: FormAction
+  controls: CaseControls
+}) {
+  const { verdict, standingRuling, rulings, grades } = judgement
+  return (
+    <article id="case" aria-label={evidence.name} className="flex min-w-0 flex-col lg:h-full lg:min-h-0">
+      <div className="flex flex-col gap-4 px-5 py-5 lg:min-h-0 lg:flex-1 lg:overflow-y-auto">
+        <header className="flex flex-wrap items-start justify-between gap-x-4 gap-y-1">
+          <div className="flex min-w-0 flex-col gap-0.5">
+            <h2 className="figures text-title font-semibold [overflow-wrap:anywhere]">{evidence.name}</h2>
+            <Position raDeg={evidence.raDeg} decDeg={evidence.decDeg} />
+          </div>
+          <div className="flex items-center gap-3 pt-1">
+            <Link
+              href={`/campaigns/${slug}/candidates/${evidence.id}`}
+              className="text-note text-mute underline decoration-edge underline-offset-4 hover:text-text"
+            >
+              All its evidence
+            </Link>
+            <StatePill state={judgement.state} />
+          </div>
+        </header>
+        <div className="grid items-start gap-x-6 gap-y-5 xl:grid-cols-[minmax(0,1fr)_18rem]">
+          <div className="flex min-w-0 flex-col gap-4">
+            <div className="lg:max-w-[min(100%,calc(100dvh-21rem))] lg:min-w-96">
+              <ViewsTray
+                name={evidence.name}
+                pictures={evidence.pictures}
+                chosen={controls.view}
+                onChoose={controls.onView}
+                keys={controls.keys}
+              />
+            </div>
+            <div className="flex max-w-prose flex-col gap-1.5 text-small text-mute">
+              <p>
+                <span className="font-semibold text-text">
+                  {judgement.state === 'split' ? 'Why it is split.' : `Why it is ${judgement.state}.`}
+                </span>{' '}
+                {judgement.stateReason}
+              </p>
+              {judgement.state === 'split' && decides.length > 0 ? (
+                <p>
+                  <span className="font-semibold text-text">What would decide it.</span> {decides.join(' ')}
+                </p>
+              ) : null}
+              {verdict ? (
+                <p className="text-note">
+                  {arithmeticInWords(verdict, grades)} {thresholdsInWords(verdict)}
+                </p>
+              ) : null}
+            </div>
+          </div>
+          <div className="flex min-w-0 flex-col gap-5">
+            <section aria-label="Grades" className="flex flex-col gap-2">
+              <h3 className="text-small font-semibold text-mute">{counted(grades.length, 'answer')}</h3>
+              <GradeList grades={grades} />
+            </section>
+            {rulings.length > 0 ? (
+              <section aria-label="Rulings" className="flex flex-col gap-2">
+                <h3 className="text-small font-semibold text-mute">{counted(rulings.length, 'ruling')}</h3>
+                <RulingList rulings={rulings} standing={standingRuling} />
+              </section>
+            ) : null}
+          </div>
+        </div>
+      </div>
+      <footer className="sticky bottom-0 border-t border-line bg-raise/95 px-5 py-3 backdrop-blur-sm lg:static lg:bg-raise">
+        {judgement.calibration ? (
+          <Notice>This is a calibration stamp: its truth is known, so it is never ruled on.</Notice>
+        ) : (
+          <RulingForm
+            action={action}
+            standing={standingRuling}
+            lastRulingId={rulings[0]?.id ?? null}
+            choice={controls.choice}
+            onChoose={controls.onChoose}
+            reasonRef={controls.reasonRef}
+            keys={controls.keys}
+            hidden={nextId === null ? {} : { next: String(nextId) }}
+          />
+        )}
+      </footer>
+    </article>
+  )
+}
