@@ -148,6 +148,14 @@ describe('fitDawidSkene on the seeded panel of 200 items and 8 raters, 40 % miss
     expect(fit.logLikelihood).toBeLessThan(0)
   })
 
+  it('is the same with a fifth grade and class that nobody uses', () => {
+    const fit = fitDawidSkene(table, likelihood)
+    const wider = fitDawidSkene(tableOf(entries, 200, 8, 5), { ...likelihood, classes: 5 })
+    expect(wider.iterations).toBe(fit.iterations)
+    expectNear(wider.classShares, [...fit.classShares, 0], 1e-9)
+    ratings.forEach((_, item) => expectNear(posteriorOf(wider, item), [...posteriorOf(fit, item), 0], 1e-9))
+  })
+
   it('holds the class shares that it is told to hold', () => {
     const shares = [0.7, 0.1, 0.1, 0.1]
     expect([...fitDawidSkene(table, { ...likelihood, shares }).classShares]).toEqual(shares)

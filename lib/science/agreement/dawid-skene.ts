@@ -64,7 +64,7 @@ export function fitDawidSkene(table: GradesByCandidate, options: DawidSkeneOptio
     classShares: model.shares,
     confusion: model.confusion(),
     posterior: model.posterior,
-    counts: model.byClass(model.sums),
+    counts: model.counts(),
     logLikelihood: model.logLikelihood,
     logPosterior: model.logPosterior(),
     iterations,
