@@ -1,0 +1,44 @@
+'use client'
+
+import useSWR from 'swr'
+import type { FileFate } from '@/db/schema/intake'
+import type { FilePage } from '@/lib/work/intake/delivered-file'
+import { FILES_PER_PAGE } from './files-per-page'
+
+const POLL_MS = 1000
+
+export interface FileFilter {
+  fate: FileFate | null
+  search: string
+  /** null is the first page. */
+  cursor: string | null
+}
+
+export const FIRST_PAGE: FileFilter = { fate: null, search: '', cursor: null }
+
+function filesKey(slug: string, { fate, search, cursor }: FileFilter): string {
+  const query = new URLSearchParams({ limit: String(FILES_PER_PAGE), first: 'refused' })
+  if (fate) query.set('fate', fate)
+  if (search) query.set('search', search)
+  if (cursor) query.set('cursor', cursor)
+  return `/api/campaigns/${slug}/files?${query}`
+}
+
+async function fetchPage(key: string): Promise<FilePage> {
+  const response = await fetch(key)
+  const body: unknown = await response.json().catch(() => null)
+  if (response.ok) return body as FilePage
+  const detail = (body as { detail?: unknown } | null)?.detail
+  throw new Error(typeof detail === 'string' ? detail : `The server answered ${response.status}.`)
+}
+
+/** A page of files, asked for every second while files are sent or read. */
+export function useFiles(slug: string, filter: FileFilter, initial: FilePage, sending: boolean) {
+  const isFirst = filter.fate === null && filter.search === '' && filter.cursor === null
+  return useSWR<FilePage, Error>(filesKey(slug, filter), fetchPage, {
+    fallbackData: isFirst ? initial : undefined,
+    keepPreviousData: true,
+    refreshInterval: (page) => (sending || page?.summary.working ? POLL_MS : 0),
+    revalidateOnMount: true,
+  })
+}
