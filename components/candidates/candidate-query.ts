@@ -17,9 +17,9 @@ const ORDERS: Readonly<Record<string, CandidateTableInput['order']>> = {
 export function candidateQuery(role: ColumnsFor, search: URLSearchParams, pageSize: number): CandidateTableInput {
   const shape: TableShape = { columns: CANDIDATE_COLUMNS[role], defaultSort: CANDIDATE_SORT }
   const { sort, filters, page } = readTableState(shape, search)
-  const chosen = chosenOf(filters.state)
   const choices = shape.columns.find((column) => column.id === 'state')?.filter ?? []
-  const states = chosen.filter((state) => state !== UNGRADED && choices.includes(state)) as CandidateState[]
+  const chosen = chosenOf(filters.state).filter((state) => choices.includes(state))
+  const states = chosen.filter((state) => state !== UNGRADED) as CandidateState[]
   return {
     filter: { name: filters.name?.trim(), states, withheld: chosen.includes(UNGRADED) },
     order: ORDERS[sort[0].id] ?? 'id',

@@ -60,7 +60,7 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
   {
     name: 'spread_points',
     datatype: 'double',
-    ucd: 'stat.stdev;meta.code.qual',
+    ucd: 'stat.stdev',
     description: 'Population standard deviation (divisor n) of the grade points',
     value: (entry) => entry.spread,
   },

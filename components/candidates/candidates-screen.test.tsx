@@ -1,0 +1,88 @@
+import { render, screen, within } from '@testing-library/react'
+import userEvent from '@testing-library/user-event'
+import { beforeEach, expect, it, vi } from 'vitest'
+import type { CandidateTableRow } from '@/lib/work/catalogue/candidate-table'
+import type { ColumnsFor } from './candidate-columns'
+import { candidateQuery } from './candidate-query'
+import { CandidatesScreen } from './candidates-screen'
+
+const replace = vi.hoisted(() => vi.fn())
+vi.mock('next/navigation', () => ({
+  useRouter: () => ({ replace }),
+  useSearchParams: () => new URLSearchParams(window.location.search),
+}))
+
+const row = (id: number, more: Partial<CandidateTableRow> = {}): CandidateTableRow => ({
+  id,
+  name: `candidate ${id}`,
+  raDeg: 1,
+  decDeg: -1,
+  state: 'open',
+  verdict: null,
+  designation: null,
+  withheld: false,
+  votes: { A: 0, B: 0, C: 0, N: 0, U: 0 },
+  thumbnail: null,
+  ...more,
+})
+
+beforeEach(() => {
+  replace.mockReset()
+  window.history.replaceState(null, '', '/campaigns/north/candidates')
+})
+
+function show(role: ColumnsFor, rows: CandidateTableRow[], count = rows.length, all = count) {
+  return render(<CandidatesScreen slug="north" role={role} table={{ rows, count, all }} />)
+}
+
+it('asks the server for another order instead of sorting the page it has', async () => {
+  const user = userEvent.setup()
+  show('lead', [row(2), row(1)], 250)
+  await user.click(within(screen.getByRole('columnheader', { name: 'Candidate' })).getByRole('button'))
+  expect(replace).toHaveBeenCalledWith('/campaigns/north/candidates?sort=name', { scroll: false })
+  expect(screen.getAllByRole('rowheader').map((cell) => cell.textContent)).toEqual(['candidate 2', 'candidate 1'])
+})
+
+it('asks the server for states and for the next page', async () => {
+  const user = userEvent.setup()
+  show('lead', [row(1)], 250)
+  await user.click(screen.getByRole('button', { name: 'Filters' }))
+  await user.click(screen.getByRole('button', { name: 'set aside' }))
+  expect(replace).toHaveBeenLastCalledWith('/campaigns/north/candidates?state=set+aside', { scroll: false })
+  await user.click(screen.getByRole('button', { name: 'Next' }))
+  expect(replace).toHaveBeenLastCalledWith('/campaigns/north/candidates?state=set+aside&page=2', { scroll: false })
+})
+
+it('shows the score and the calibration mark to a lead, and no such column to others', () => {
+  const { unmount } = show('lead', [row(1, { score: 0.25, calibration: true })])
+  expect(screen.getByText('0.250')).toBeInTheDocument()
+  expect(screen.getByText('calibration')).toBeInTheDocument()
+  unmount()
+  show('grader', [row(1, { withheld: true, state: null, votes: null })])
+  expect(screen.queryByRole('columnheader', { name: /Score/ })).toBeNull()
+  expect(screen.getByText('after your grade')).toBeInTheDocument()
+})
+
+it('says what to do while there are no candidates, to each role what they can do', () => {
+  const { unmount } = show('lead', [])
+  expect(screen.getByRole('link', { name: 'Bring in cutouts' })).toHaveAttribute('href', '/campaigns/north/intake')
+  unmount()
+  show('grader', [])
+  expect(screen.queryByRole('link')).toBeNull()
+})
+
+it('turns an address into what the server is asked for', () => {
+  const search = new URLSearchParams('sort=-mean&state=split,not graded by me,nonsense&name= SWS &page=3')
+  expect(candidateQuery('grader', search, 100)).toEqual({
+    filter: { name: 'SWS', states: ['split'], withheld: true },
+    order: 'mean',
+    descending: true,
+    page: 2,
+    pageSize: 100,
+  })
+})
+
+it('does not take an order or a state from the address that the role does not have', () => {
+  const query = candidateQuery('viewer', new URLSearchParams('sort=-score&state=not graded by me'), 100)
+  expect(query).toMatchObject({ order: 'id', descending: false, filter: { states: [], withheld: false } })
+})

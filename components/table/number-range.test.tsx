@@ -1,0 +1,31 @@
+import { expect, it } from 'vitest'
+import { isInRange, parseNumberRange } from './number-range'
+
+const within = (text: string, value: number) => {
+  const range = parseNumberRange(text)
+  return range && isInRange(range, value)
+}
+
+it.each([
+  ['2..3', 2, true],
+  ['2..3', 3.01, false],
+  ['..3', -7, true],
+  ['2 to 3', 2.5, true],
+  ['2..', 99, true],
+  ['>2', 2, false],
+  ['>=2', 2, true],
+  ['≥ 2', 2, true],
+  ['< 2', 2, false],
+  ['<=2', 2, true],
+  ['-12..−10', -11, true],
+  ['2.5', 2.45, true],
+  ['2.5', 2.55, false],
+  ['4', 4.4, true],
+  ['4', 4.5, false],
+])('reads "%s": %d is in it: %s', (text, value, expected) => {
+  expect(within(text, value)).toBe(expected)
+})
+
+it.each(['', 'abc', '..', '2..x', '>', '1e5'])('does not take "%s" for a range', (text) => {
+  expect(parseNumberRange(text)).toBeNull()
+})
