@@ -8,7 +8,7 @@ export function FormSection({ title, about, children }: { title: string; about: 
         <h2 className="text-body font-semibold">{title}</h2>
         <div className="text-small text-mute">{about}</div>
       </div>
-      <div className="flex max-w-2xl flex-col gap-5">{children}</div>
+      <div className="flex min-w-0 max-w-2xl flex-col gap-5">{children}</div>
     </section>
   )
 }

@@ -14,7 +14,7 @@ export interface TrayStamp {
 /** The candidates confirmed last, as pictures on the black tray. */
 export function NewestTray({ stamps, campaignPath }: { stamps: TrayStamp[]; campaignPath: string }) {
   return (
-    <ul className="night grid grid-cols-2 gap-3 rounded-tray bg-tray p-3 sm:grid-cols-4 lg:grid-cols-8">
+    <ul className="night grid grid-cols-[repeat(auto-fill,minmax(6.5rem,1fr))] gap-3 rounded-tray bg-tray p-3">
       {stamps.map((stamp) => (
         <li key={stamp.id}>
           <Link href={`${campaignPath}/candidates/${stamp.id}`} className="group flex flex-col gap-1">

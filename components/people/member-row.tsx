@@ -19,7 +19,7 @@ function RoleForm({ member, action }: { member: MemberView; action: FormAction }
   const [role, setRole] = useState<Role>(member.role)
   const { state, pending, formProps } = useKeptForm(action)
   return (
-    <form {...formProps} className="flex flex-col gap-1" aria-label={`Role of ${member.name}`}>
+    <form {...formProps} className="flex flex-col gap-1">
       <span className="flex items-center gap-2">
         <select
           name="role"

@@ -33,8 +33,7 @@ export function PasswordField({
       />
       <button
         type="button"
-        aria-pressed={visible}
-        aria-label={`Show: ${label}`}
+        aria-label={visible ? 'Hide what is typed' : 'Show what is typed'}
         onClick={() => setVisible(!visible)}
         className="absolute right-0 top-0 min-h-6 px-1 text-note text-mute underline decoration-line underline-offset-4 hover:text-text"
       >

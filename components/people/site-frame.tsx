@@ -24,7 +24,7 @@ export function SiteFrame({
       : []),
   ]
   return (
-    <Shell viewerName={viewer.isAdmin ? `${viewer.name}, administrator` : viewer.name} links={links}>
+    <Shell viewerName={viewer.name} links={links}>
       <div className="mx-auto flex max-w-6xl flex-col gap-8 px-5 py-8 md:px-10">{children}</div>
     </Shell>
   )

@@ -38,7 +38,7 @@ export const RuleInput = z
     splitSpread: points('The spread that splits', DEFAULT_MEAN_RULE.splitSpread),
   })
   .superRefine((rule, context) => {
-    if (rule.leastGrades > rule.gradesWanted) {
+    if (rule.gradesWanted >= 1 && rule.leastGrades > rule.gradesWanted) {
       context.addIssue({
         code: 'custom',
         path: ['leastGrades'],

@@ -1,0 +1,74 @@
+import { describe, expect, it } from 'vitest'
+import { DEFAULT_MEAN_RULE } from '@/lib/science/agreement/mean-rule'
+import { CampaignInput, NamePattern, parseCampaignForm, RuleInput } from './campaign-input'
+
+const FIELDS = { name: 'North field', survey: 'Saltmarsh Wide Survey', acronym: 'SWS', bands: 'g r i' }
+
+const faults = (parse: () => unknown): Record<string, string> => {
+  try {
+    parse()
+    return {}
+  } catch (error) {
+    const { issues } = error as { issues: { path: PropertyKey[]; message: string }[] }
+    return Object.fromEntries(issues.map((issue) => [String(issue.path[0]), issue.message]))
+  }
+}
+
+describe('the rule', () => {
+  it('takes the defaults where nothing is said', () => {
+    expect(RuleInput.parse({})).toEqual(DEFAULT_MEAN_RULE)
+  })
+
+  it('reads a comma as a decimal point', () => {
+    expect(RuleInput.parse({ confirmMean: '2,25' }).confirmMean).toBe(2.25)
+  })
+
+  it('does not take an empty field for 0', () => {
+    expect(faults(() => RuleInput.parse({ setAsideMean: '', gradesWanted: ' ' }))).toEqual({
+      setAsideMean: 'The mean that sets aside is a number of points, such as 1.',
+      gradesWanted: 'The number of grades wanted is a whole number, such as 6.',
+    })
+  })
+
+  it.each([
+    [{ gradesWanted: '2.5' }, 'gradesWanted'],
+    [{ gradesWanted: '0' }, 'gradesWanted'],
+    [{ gradesWanted: '1e9' }, 'gradesWanted'],
+    [{ gradesWanted: '3', leastGrades: '4' }, 'leastGrades'],
+    [{ confirmMean: '3.1' }, 'confirmMean'],
+    [{ confirmMean: '1', setAsideMean: '1' }, 'setAsideMean'],
+    [{ splitSpread: 'Infinity' }, 'splitSpread'],
+    [{ splitSpread: 'abc' }, 'splitSpread'],
+  ])('refuses %j with a sentence at its field', (fields, name) => {
+    expect(Object.keys(faults(() => RuleInput.parse(fields)))).toEqual([name])
+  })
+})
+
+describe('the campaign', () => {
+  it('keeps the order of the bands, however they are set apart', () => {
+    expect(CampaignInput.parse({ ...FIELDS, bands: ' g,r;  i\nF814W ' }).bands).toEqual(['g', 'r', 'i', 'F814W'])
+  })
+
+  it.each([
+    [{ name: '  ' }, 'name'],
+    [{ acronym: 'SW' }, 'acronym'],
+    [{ acronym: 'sws' }, 'acronym'],
+    [{ acronym: 'S W S' }, 'acronym'],
+    [{ bands: '' }, 'bands'],
+    [{ bands: 'g g' }, 'bands'],
+    [{ bands: 'g <script>' }, 'bands'],
+    [{ namePattern: '{band}' }, 'namePattern'],
+    [{ namePattern: '{candidate}_{filter}' }, 'namePattern'],
+  ])('refuses %j with a sentence at its field', (fields, name) => {
+    expect(Object.keys(faults(() => CampaignInput.parse({ ...FIELDS, ...fields })))).toEqual([name])
+  })
+
+  it('takes an empty name pattern for the default', () => {
+    expect(NamePattern.parse(' ')).toBeNull()
+  })
+})
+
+it('tells the faults of both parts of the form in one go', () => {
+  const found = faults(() => parseCampaignForm({ ...FIELDS, name: '', gradesWanted: 'many' }))
+  expect(Object.keys(found).sort()).toEqual(['gradesWanted', 'name'])
+})
