@@ -1,5 +1,6 @@
 'use client'
 
+import { useEffect, useState } from 'react'
 import useSWR from 'swr'
 import type { FileFate } from '@/db/schema/intake'
 import type { FilePage } from '@/lib/work/intake/delivered-file'
@@ -32,13 +33,21 @@ async function fetchPage(key: string): Promise<FilePage> {
   throw new Error(typeof detail === 'string' ? detail : `The server answered ${response.status}.`)
 }
 
-/** A page of files, asked for every second while files are sent or read. */
+/** A page of files, asked for every second while files are sent or read, and once more when that is over. */
 export function useFiles(slug: string, filter: FileFilter, initial: FilePage, sending: boolean) {
   const isFirst = filter.fate === null && filter.search === '' && filter.cursor === null
-  return useSWR<FilePage, Error>(filesKey(slug, filter), fetchPage, {
+  const [working, setWorking] = useState(initial.summary.working)
+  const answer = useSWR<FilePage, Error>(filesKey(slug, filter), fetchPage, {
     fallbackData: isFirst ? initial : undefined,
     keepPreviousData: true,
-    refreshInterval: (page) => (sending || page?.summary.working ? POLL_MS : 0),
-    revalidateOnMount: true,
+    // A number and not a function of the data: SWR starts its clock anew with each new function, and a page that is drawn
+    // ten times a second while files are sent would never ask.
+    refreshInterval: sending || working ? POLL_MS : 0,
+    onSuccess: (page) => setWorking(page.summary.working),
   })
+  const { mutate } = answer
+  useEffect(() => {
+    if (!sending) void mutate()
+  }, [sending, mutate])
+  return answer
 }

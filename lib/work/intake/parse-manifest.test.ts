@@ -1,0 +1,64 @@
+import { describe, expect, it } from 'vitest'
+import { parseManifest } from './parse-manifest'
+
+const parse = (text: string) => parseManifest(new TextEncoder().encode(text))
+
+describe('a manifest', () => {
+  it('is read with its columns in any order and spelling', () => {
+    const { entries, problems, refusal } = parse(
+      'Filter;RA (deg);DEC_J2000;File Name;ID;PixScale;Prob;z_lens;zs\nG;3.144;-1.396;a/SWS1_g.fits;SWS1;0.2;0.97;0.41;1.9\n',
+    )
+    expect(refusal).toBeNull()
+    expect(problems).toEqual([])
+    expect(entries).toEqual([
+      {
+        line: 2,
+        fileName: 'a/SWS1_g.fits',
+        fileBase: 'SWS1_g',
+        candidate: 'SWS1',
+        band: 'G',
+        raDeg: 3.144,
+        decDeg: -1.396,
+        pixelScaleArcsec: 0.2,
+        score: 0.97,
+        lensRedshift: 0.41,
+        sourceRedshift: 1.9,
+      },
+    ])
+  })
+
+  it('takes sexagesimal positions: 12 hours are 180 degrees', () => {
+    const [entry] = parse('name,ra,dec\nSWS1,12:00:00,-01:30:00\n').entries
+    expect(entry).toMatchObject({ raDeg: 180, decDeg: -1.5, fileName: null })
+  })
+
+  it('takes a line without what cannot be used, and says what and where', () => {
+    const { entries, problems } = parse('name,ra,dec,score,pixel_scale\nSWS1,abc,2,high,-1\nSWS2,150,,nan,0.2\n')
+    expect(entries).toMatchObject([
+      { candidate: 'SWS1', raDeg: null, decDeg: null, score: null, pixelScaleArcsec: null },
+      { candidate: 'SWS2', raDeg: null, decDeg: null, score: null, pixelScaleArcsec: 0.2 },
+    ])
+    expect(problems).toHaveLength(4)
+    expect(problems[0]).toMatch(/^Line 2: .*"abc"/)
+    expect(problems[1]).toMatch(/^Line 2: pixel_scale is '-1'/)
+    expect(problems[2]).toMatch(/^Line 2: score is 'high'/)
+    expect(problems[3]).toMatch(/^Line 3: it has a right ascension without a declination/)
+  })
+
+  it('names a line that has neither file nor candidate', () => {
+    const { entries, problems } = parse('name,score\n,0.5\nSWS1,0.6\n')
+    expect(entries.map(({ candidate }) => candidate)).toEqual(['SWS1'])
+    expect(problems).toEqual(['Line 2: neither a file nor a candidate is named, so that nothing is taken from it.'])
+  })
+
+  it('is refused without a column for the file or the candidate, naming the columns it has', () => {
+    const { entries, refusal } = parse('alpha,delta\n1,2\n')
+    expect(entries).toEqual([])
+    expect(refusal?.fault).toBe('no-columns')
+    expect(refusal?.reason).toContain('alpha, delta')
+  })
+
+  it('is refused when it is empty', () => {
+    expect(parse('').refusal?.fault).toBe('no-columns')
+  })
+})
