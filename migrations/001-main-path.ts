@@ -165,6 +165,9 @@ const STATEMENTS = [
   ) strict`,
   `create index candidate_dec on candidate (campaign_id, dec_deg)`,
   `create index candidate_state on candidate (campaign_id, state, id)`,
+  `create index candidate_list on candidate (campaign_id, id, truth, verdict_id)`,
+  `create index candidate_ra on candidate (campaign_id, ra_deg)`,
+  `create index candidate_score on candidate (campaign_id, score)`,
   `create index candidate_queue on candidate (campaign_id, grades_given desc, id) where imaged_at is not null`,
 
   `create table state_change (
@@ -271,7 +274,8 @@ const STATEMENTS = [
     probability real,
     reason text not null
   ) strict`,
-  `create index verdict_candidate on verdict (candidate_id, id)`,
+  // With mean and spread, so that candidates are sorted by them without reading their reasons.
+  `create index verdict_candidate on verdict (candidate_id, id, mean, spread)`,
   `create index verdict_run on verdict (run_id)`,
 
   `create table ruling (
