@@ -34,13 +34,21 @@ function among(ids: readonly number[]) {
 
 /**
  * Whether the reader may see what was judged of this candidate. The same condition as `listJudgedAmong` of the grading room:
- * a standing answer of their own that is a grade and not 'cannot judge'.
+ * a standing answer of their own that is a grade and not 'cannot judge'. A list made once costs what the reader has graded,
+ * not what the campaign holds.
  */
-function isRevealed({ judgedBy }: CandidateScope): RawBuilder<SqlBool> {
+function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBool> {
   if (judgedBy === null) return sql<SqlBool>`true`
-  return sql<SqlBool>`exists (select 1 from grade own where own.candidate_id = candidate.id and own.person_id = ${judgedBy}
-    and own.grade != 'U' and not exists (select 1 from grade newer where newer.replaces = own.id))`
+  return sql<SqlBool>`candidate.id in (select own.candidate_id from grade own
+    where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and own.grade != 'U'
+      and not exists (select 1 from grade newer where newer.replaces = own.id))`
 }
+
+/**
+ * The campaign as a condition that takes no index: for lists of ids, which are few. SQLite would take the campaign's own
+ * index, trusting it to be narrow, and read the whole campaign.
+ */
+const inCampaign = (column: string, campaignId: number) => sql<SqlBool>`+${sql.ref(column)} = ${campaignId}`
 
 function candidates(db: Kysely<DB>, scope: CandidateScope) {
   return db
@@ -49,8 +57,10 @@ function candidates(db: Kysely<DB>, scope: CandidateScope) {
     .$if(!scope.withCalibration, (query) => query.where('candidate.truth', 'is', null))
 }
 
-function candidateRows(db: Kysely<DB>, scope: CandidateScope) {
-  return candidates(db, scope)
+/** For each candidate the columns that a list shows, still without saying which candidates. */
+function candidateRows(db: Kysely<DB>) {
+  return db
+    .selectFrom('candidate')
     .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
     .leftJoin('designation', 'designation.candidate_id', 'candidate.id')
     .select([
@@ -78,12 +88,13 @@ export async function listCandidatesAfter(
   page: { afterId: number; limit: number; state?: CandidateState },
 ): Promise<CandidateRow[]> {
   const { state } = page
-  return candidateRows(db, scope)
+  const ids = candidates(db, scope)
+    .select('candidate.id')
     .where('candidate.id', '>', page.afterId)
     .$if(state !== undefined, (query) => query.where('candidate.state', '=', state!).where(isRevealed(scope)))
     .orderBy('candidate.id')
     .limit(page.limit)
-    .execute()
+  return candidateRows(db).where('candidate.id', 'in', ids).orderBy('candidate.id').execute()
 }
 
 export const CANDIDATE_ORDERS = ['id', 'name', 'raDeg', 'decDeg', 'state', 'mean', 'spread', 'score'] as const
@@ -145,7 +156,12 @@ export async function listCandidateSlice(
   const ids = await filtered(db, scope, slice.filter)
     .select('candidate.id')
     .$if(order === 'mean' || order === 'spread', (query) =>
-      query.leftJoin('verdict', 'verdict.id', 'candidate.verdict_id'),
+      query.leftJoin('verdict', (join) =>
+        join
+          .onRef('verdict.candidate_id', '=', 'candidate.id')
+          // The plus lets SQLite find it in the index of candidates, which holds mean and spread, and not in the table.
+          .on(sql<SqlBool>`+verdict.id = candidate.verdict_id`),
+      ),
     )
     .$if(order !== 'id', (query) => query.orderBy(key, (by) => (descending ? by.desc() : by.asc()).nullsLast()))
     .orderBy('candidate.id', descending ? 'desc' : 'asc')
@@ -153,7 +169,7 @@ export async function listCandidateSlice(
     .offset(slice.offset)
     .execute()
   const place = new Map(ids.map(({ id }, index) => [id, index]))
-  const rows = await candidateRows(db, scope)
+  const rows = await candidateRows(db)
     .where('candidate.id', 'in', among([...place.keys()]))
     .execute()
   return rows.toSorted((a, b) => place.get(a.id)! - place.get(b.id)!)
@@ -249,7 +265,7 @@ export async function listEntryAnswers(db: Kysely<DB>, campaignId: number, candi
       'grade.remark',
       'membership.pseudonym as by',
     ])
-    .where('grade.campaign_id', '=', campaignId)
+    .where(inCampaign('grade.campaign_id', campaignId))
     .where('grade.candidate_id', 'in', among(candidateIds))
     .where('grade.occasion', 'in', ['first', 'asked'])
     .where((e) =>
@@ -280,7 +296,7 @@ export async function listThumbnails(
   return db
     .selectFrom('stamp')
     .select(['candidate_id as candidateId', 'sha256'])
-    .where('campaign_id', '=', campaignId)
+    .where(inCampaign('stamp.campaign_id', campaignId))
     .where('candidate_id', 'in', among(candidateIds))
     .where('id', '=', (e) =>
       e
