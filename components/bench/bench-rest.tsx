@@ -61,7 +61,7 @@ export function BenchRest({
     'inline-flex min-h-11 items-center text-small underline decoration-line underline-offset-4 hover:decoration-text'
   return (
     <div className="grid flex-1 place-items-center p-6">
-      <div className="flex max-w-md flex-col items-start gap-4" role="status">
+      <div className="flex max-w-lg flex-col items-start gap-4" role="status">
         <h1 className="text-display font-semibold">{title}</h1>
         {text ? <p className="text-mute">{text}</p> : null}
         {sitting ? <p className="text-mute">{sitting}</p> : null}

@@ -19,6 +19,9 @@ export interface Answer extends Draft {
 export interface Look {
   candidate: BenchCandidate
   answer: Answer
+  /** The view in sight when it was given, and the seconds taken. */
+  view: string | null
+  seconds: number
 }
 
 /** 'dry': the server had fewer than asked for, although more is left: it lies on other people's benches. */
@@ -50,7 +53,7 @@ export interface Supplied {
 }
 
 export type BenchAction =
-  | { type: 'graded'; answer: Answer }
+  | { type: 'graded'; answer: Answer; view: string | null; seconds: number }
   | { type: 'went back' }
   | { type: 'kept' }
   | { type: 'explained'; reason: CannotJudgeReason }
@@ -118,7 +121,7 @@ export function explainable(session: BenchSession): Look | null {
 export function reduceSession(session: BenchSession, action: BenchAction): BenchSession {
   switch (action.type) {
     case 'graded':
-      return graded(session, action.answer)
+      return graded(session, action)
     case 'went back':
       return wentBack(session)
     case 'kept':
@@ -153,21 +156,22 @@ function without(drafts: Record<number, Draft>, id: number): Record<number, Draf
   return Object.fromEntries(Object.entries(drafts).filter(([key]) => Number(key) !== id))
 }
 
-function graded(session: BenchSession, answer: Answer): BenchSession {
+function graded(session: BenchSession, { answer, view, seconds }: BenchAction & { type: 'graded' }): BenchSession {
   const look = currentLook(session)
   if (!look) return session
   const candidateId = look.candidate.id
   const drafts = without(session.drafts, candidateId)
   if (look.answer) {
     const same = sameAnswer(look.answer, answer)
-    const given = session.given.map((old) => (old.candidate.id === candidateId ? { ...old, answer } : old))
+    const corrected = { candidate: look.candidate, answer, view, seconds }
+    const given = session.given.map((old) => (old.candidate.id === candidateId ? corrected : old))
     const last = { what: same ? ('kept' as const) : ('corrected' as const), candidateId }
     return { ...session, given, drafts, lookingBack: null, last, ...firstView(session.upcoming[0]) }
   }
   const upcoming = session.upcoming.slice(1)
   return {
     ...session,
-    given: [...session.given, { candidate: look.candidate, answer }],
+    given: [...session.given, { candidate: look.candidate, answer, view, seconds }],
     upcoming,
     drafts,
     counts: { given: session.counts.given + 1, left: Math.max(0, session.counts.left - 1) },

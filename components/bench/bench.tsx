@@ -49,11 +49,13 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
 
   return (
     <div className="night fixed inset-0 flex flex-col overflow-hidden bg-bench text-text [color-scheme:dark]">
-      <ProgressHairline {...session.counts} />
-      <p aria-live="polite" className="sr-only">
-        {spoken}
-      </p>
-      <main className="flex min-h-0 flex-1 flex-col md:grid md:grid-cols-[minmax(0,1fr)_18.5rem]">
+      <main className="flex min-h-0 flex-1 flex-col md:grid md:grid-cols-[minmax(0,1fr)_18.5rem] md:grid-rows-[auto_minmax(0,1fr)]">
+        <div className="md:col-span-2">
+          <ProgressHairline {...session.counts} />
+          <p aria-live="polite" className="sr-only">
+            {spoken}
+          </p>
+        </div>
         <div className="flex min-h-0 min-w-0 flex-1 flex-col">
           <BenchHeader
             slug={slug}
@@ -88,7 +90,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
         </div>
         <aside
           aria-label="Your grade"
-          className="flex flex-col gap-1 px-3 pb-[max(0.5rem,env(safe-area-inset-bottom))] md:gap-3 md:overflow-y-auto md:border-l md:border-line md:px-5 md:pb-4 md:pt-4"
+          className={`flex flex-col gap-1 px-3 pb-[max(0.5rem,env(safe-area-inset-bottom))] md:gap-3 md:overflow-y-auto md:px-5 md:pb-4 md:pt-4 ${look ? 'md:border-l md:border-line' : ''}`}
         >
           {look ? (
             <>
@@ -101,6 +103,11 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 onOpen={() => run({ do: 'tags' })}
                 onToggle={bench.toggleTag}
               />
+            </>
+          ) : null}
+          <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />
+          <div className="flex flex-wrap items-center justify-between gap-x-3 md:contents">
+            {look ? (
               <RemarkBox
                 remark={bench.draft.remark}
                 open={bench.remarkOpen}
@@ -108,19 +115,22 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 onClose={bench.closeRemark}
                 onWrite={bench.writeRemark}
               />
-            </>
-          ) : null}
-          <div className="flex items-center justify-between gap-3 md:mt-auto md:flex-col md:items-start md:gap-2">
-            <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />
-            <SaveLine snapshot={bench.snapshot} />
-            <button
-              type="button"
-              onClick={letGo(() => bench.setHelpOpen(true))}
-              className="order-last flex min-h-11 items-center gap-2 text-note text-mute hover:text-text md:order-first md:min-h-7"
-            >
-              {keysOn ? <KeyCap>?</KeyCap> : null}
-              {keysOn ? 'All keys' : 'Keys are off'}
-            </button>
+            ) : null}
+            <div className="flex grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2">
+              <SaveLine snapshot={bench.snapshot} />
+              <button
+                type="button"
+                onClick={letGo(() => bench.setHelpOpen(true))}
+                className="order-last flex min-h-11 items-center gap-2 text-note text-mute hover:text-text md:order-first md:min-h-7"
+              >
+                {keysOn ? (
+                  <span className="hidden md:inline">
+                    <KeyCap>?</KeyCap>
+                  </span>
+                ) : null}
+                {keysOn ? 'All keys' : 'Keys are off'}
+              </button>
+            </div>
           </div>
         </aside>
       </main>

@@ -20,12 +20,17 @@ export function ChoiceChips<T extends string>({
         key={choice}
         type="button"
         aria-pressed={on}
+        aria-keyshortcuts={open ? CHOICE_KEYS[index] : undefined}
         onClick={letGo(() => onPick(choice))}
         className={`inline-flex min-h-11 touch-manipulation items-center gap-1.5 whitespace-nowrap rounded-full border px-3 text-small md:min-h-7 md:px-2.5 md:text-note ${
           on ? 'border-lamp bg-lamp/12 text-text' : 'border-line text-mute hover:border-edge hover:text-text'
         }`}
       >
-        {open ? <kbd className="figures text-[0.6875rem] font-semibold text-lamp">{CHOICE_KEYS[index]}</kbd> : null}
+        {open ? (
+          <kbd aria-hidden="true" className="figures hidden text-[0.6875rem] font-semibold text-lamp md:inline">
+            {CHOICE_KEYS[index]}
+          </kbd>
+        ) : null}
         {choice}
       </button>
     )

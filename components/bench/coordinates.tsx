@@ -51,7 +51,7 @@ function Copyable({ text, what, onCopy }: { text: string; what: string; onCopy: 
       title={`Copy the position in ${what}`}
       aria-label={`Copy the position in ${what}, ${text}`}
       onClick={letGo(() => onCopy(text))}
-      className="min-h-6 whitespace-nowrap rounded-key hover:text-text"
+      className="min-h-11 whitespace-nowrap md:min-h-6 rounded-key hover:text-text"
     >
       {text}
     </button>

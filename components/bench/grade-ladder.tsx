@@ -24,8 +24,8 @@ export function GradeLadder({
             aria-label={`${letter}: ${name}, ${means}`}
             aria-pressed={chosen === letter}
             onClick={letGo(() => onGrade(letter))}
-            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line bg-raise/60 active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:bg-transparent md:text-left md:last:border-b md:hover:bg-raise ${
-              chosen === letter ? 'bg-raise md:bg-raise' : ''
+            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:text-left md:hover:bg-raise ${
+              chosen === letter ? 'bg-raise outline outline-lamp md:outline-0' : 'bg-raise/60 md:bg-transparent'
             }`}
           >
             <span className={`text-[1.625rem] font-bold leading-none md:pl-0.5 ${ink}`}>{letter}</span>
@@ -48,15 +48,15 @@ export function GradeLadder({
           aria-label={`U: ${CANNOT_JUDGE}`}
           aria-pressed={chosen === 'U'}
           onClick={letGo(() => onGrade('U'))}
-          className={`flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 rounded-control border border-line text-mute active:bg-raise md:mt-2 md:min-h-8 md:flex-row md:justify-start md:gap-2 md:border-transparent md:text-small md:hover:text-text ${
-            chosen === 'U' ? 'bg-raise' : ''
+          className={`flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 rounded-control border border-line text-mute active:bg-raise md:min-h-11 md:flex-row md:justify-start md:gap-2 md:rounded-none md:border-x-0 md:border-b-0 md:text-small md:hover:text-text ${
+            chosen === 'U' ? 'bg-raise outline outline-lamp md:outline-0' : ''
           }`}
         >
           <span className="text-[1.625rem] font-bold leading-none md:hidden">U</span>
           <span className="hidden md:block">
             <KeyCap>U</KeyCap>
           </span>
-          <span className="text-[0.6875rem] leading-tight md:text-small">{CANNOT_JUDGE}</span>
+          <span className="px-2 text-center text-[0.6875rem] leading-tight md:px-0 md:text-small">{CANNOT_JUDGE}</span>
           {chosen === 'U' ? <span className="hidden text-note text-lamp md:block">given</span> : null}
         </button>
       </div>

@@ -23,7 +23,12 @@ export function HelpOverlay({
         <Dialog.Overlay className="night fixed inset-0 z-40 bg-black/70" />
         <Dialog.Content
           aria-describedby={undefined}
-          className="night fixed inset-x-3 top-1/2 z-50 mx-auto max-h-[92dvh] max-w-lg -translate-y-1/2 overflow-y-auto rounded-tray border border-line bg-raise p-5 text-text md:p-6"
+          // The first control is the switch, which Space would turn.
+          onOpenAutoFocus={(event) => {
+            event.preventDefault()
+            if (event.currentTarget instanceof HTMLElement) event.currentTarget.focus()
+          }}
+          className="night fixed inset-x-3 top-1/2 z-50 mx-auto max-h-[92dvh] max-w-lg -translate-y-1/2 overflow-y-auto outline-none rounded-tray border border-line bg-raise p-5 text-text md:p-6"
         >
           <Dialog.Title className="text-title font-semibold">Keys at the bench</Dialog.Title>
           <dl className="mt-4 grid grid-cols-[auto_1fr] items-baseline gap-x-5 gap-y-2 text-small">

@@ -12,9 +12,11 @@ function LineButton({ label, keyName, onPress }: { label: string; keyName: strin
     <button
       type="button"
       onClick={letGo(onPress)}
-      className="flex min-h-11 items-center gap-1.5 whitespace-nowrap rounded-control px-1.5 text-note text-mute hover:text-text md:min-h-7"
+      className="flex min-h-11 items-center gap-1.5 whitespace-nowrap rounded-control px-1.5 text-note text-mute underline decoration-line underline-offset-4 hover:text-text md:min-h-7 md:no-underline"
     >
-      <KeyCap>{keyName}</KeyCap>
+      <span className="hidden md:inline">
+        <KeyCap>{keyName}</KeyCap>
+      </span>
       {label}
     </button>
   )
@@ -43,7 +45,7 @@ export function LastLine({
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
   const unclear = explainable(session)
   return (
-    <div className="flex min-h-11 items-center justify-center gap-x-2 overflow-x-auto px-3 text-note text-mute md:min-h-10">
+    <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-10">
       {hint ? (
         <span className="text-text">{hint}</span>
       ) : session.lookingBack !== null && look?.answer ? (
@@ -60,15 +62,17 @@ export function LastLine({
         </>
       ) : last ? (
         <>
-          <b className={`text-body ${INK[last.answer.grade]}`}>{last.answer.grade}</b>
-          <span className="whitespace-nowrap">
+          <b className={`text-body ${INK[last.answer.grade]} ${explaining ? 'hidden md:inline' : ''}`}>
+            {last.answer.grade}
+          </b>
+          <span className={`whitespace-nowrap ${explaining ? 'hidden md:inline' : ''}`}>
             {WHAT[session.last?.what ?? 'given']} <span className="figures">{last.candidate.name}</span>
+            {last.answer.reason ? `, ${last.answer.reason}` : ''}
           </span>
           <LineButton label="undo" keyName="Z" onPress={onUndo} />
           {unclear && !explaining && !unclear.answer.reason ? (
             <LineButton label="say why" keyName="W" onPress={onExplain} />
           ) : null}
-          {unclear?.answer.reason ? <span className="whitespace-nowrap">{unclear.answer.reason}</span> : null}
           {unclear && explaining ? (
             <ChoiceChips choices={CANNOT_JUDGE_REASONS} picked={[]} open onPick={onReason} />
           ) : null}

@@ -23,11 +23,13 @@ export function RemarkBox({
       <button
         type="button"
         onClick={letGo(onOpen)}
-        className="flex min-h-11 w-full items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
+        className="flex min-h-11 items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
       >
-        <KeyCap>M</KeyCap>
+        <span className="hidden md:inline">
+          <KeyCap>M</KeyCap>
+        </span>
         {remark.trim() ? (
-          <span className="line-clamp-2 text-text">{remark}</span>
+          <span className="line-clamp-1 text-text md:line-clamp-2">{remark}</span>
         ) : (
           <span className="font-semibold">Add a remark</span>
         )}
@@ -35,7 +37,7 @@ export function RemarkBox({
     )
   }
   return (
-    <div className="flex flex-col gap-1">
+    <div className="flex w-full flex-col gap-1">
       <label htmlFor={REMARK_ID} className="text-note font-semibold text-mute">
         Remark
       </label>
@@ -44,6 +46,7 @@ export function RemarkBox({
         autoFocus
         rows={3}
         maxLength={MOST_CHARACTERS}
+        enterKeyHint="done"
         value={remark}
         aria-describedby="bench-remark-hint"
         onChange={(event) => onWrite(event.target.value)}

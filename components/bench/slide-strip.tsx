@@ -16,7 +16,7 @@ export function SlideStrip({
     <div
       role="group"
       aria-label="Views"
-      className="flex snap-x justify-start gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pb-4"
+      className="flex snap-x gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pb-4"
     >
       {views.map(({ key, label, url, width, height, note }, index) => (
         <button
@@ -43,7 +43,11 @@ export function SlideStrip({
             )}
           </span>
           <span className="mt-1.5 flex items-baseline gap-1.5">
-            {index < 9 ? <KeyCap>{String(index + 1)}</KeyCap> : null}
+            {index < 9 ? (
+              <span className="hidden md:inline">
+                <KeyCap>{String(index + 1)}</KeyCap>
+              </span>
+            ) : null}
             <span className="truncate">{label}</span>
           </span>
         </button>

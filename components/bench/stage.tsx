@@ -1,4 +1,4 @@
-import { useState, type ReactNode } from 'react'
+import { useState, type CSSProperties, type ReactNode } from 'react'
 import { Button } from '@/components/ui/button'
 import { StampOverlay } from '@/components/ui/stamp-overlay'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
@@ -8,6 +8,9 @@ import { useHoldAndSwipe } from './use-hold-and-swipe'
 function growthStep(longerSide: number): number {
   return longerSide <= 130 ? longerSide : longerSide <= 260 ? longerSide / 2 : longerSide / 4
 }
+
+/** On fine screens half steps are whole ones of their pixels. */
+const WIDTH = 'round(down, min(100cqw, 100cqh), var(--step))'
 
 /**
  * The stamp, as large as the window allows. All views of the candidate lie on top of each other and one is visible, so that
@@ -35,11 +38,11 @@ export function Stage({
   const missing = view?.url ? broken.includes(view.url) : false
   return (
     <figure className="flex min-h-0 flex-1 flex-col">
-      <div className="grid min-h-0 flex-1 place-items-center px-3 [container-type:size] md:px-6">
+      <div className="grid min-h-0 flex-1 place-items-center px-2 [container-type:size] md:px-6">
         <div
           {...hold}
-          className="relative aspect-square w-[min(100cqw,100cqh)] touch-pan-y select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
-          style={{ width: `round(down, min(100cqw, 100cqh), ${growthStep(longest)}px)` }}
+          className="relative aspect-square w-[min(100cqw,100cqh)] touch-pan-y [--step:var(--whole)] [@media(min-resolution:2dppx)]:[--step:calc(var(--whole)/2)] select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
+          style={{ '--whole': `${growthStep(longest)}px`, width: WIDTH } as CSSProperties}
         >
           {candidate.views.map(({ key, label, url, width, height }) =>
             url ? (

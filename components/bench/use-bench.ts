@@ -55,7 +55,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     return () => clearTimeout(timer)
   }, [hint])
 
-  function send({ candidate }: Look, answer: Answer, isFirst: boolean, view: string | null, spent: number): void {
+  function send({ candidate, answer, view, seconds: spent }: Look, isFirst: boolean): void {
     const { grade, tags, reason } = answer
     outbox?.add({
       candidateId: candidate.id,
@@ -79,9 +79,9 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     const reason = letter === 'U' ? (before?.reason ?? null) : null
     const { tags, remark } = currentDraft(session)
     const given: Answer = { tags, remark, grade: letter, reason }
-    if (!before || !sameAnswer(before, given))
-      send({ candidate, answer: given }, given, !before, session.view, seconds())
-    dispatch({ type: 'graded', answer: given })
+    const spent = { view: session.view, seconds: seconds() }
+    if (!before || !sameAnswer(before, given)) send({ candidate, answer: given, ...spent }, !before)
+    dispatch({ type: 'graded', answer: given, ...spent })
     settle()
   }
 
@@ -96,7 +96,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     const unclear = explainable(session)
     setChooser(null)
     if (!unclear || unclear.answer.reason === reason) return
-    send(unclear, { ...unclear.answer, reason }, false, null, 0)
+    send({ ...unclear, answer: { ...unclear.answer, reason } }, false)
     dispatch({ type: 'explained', reason })
   }
 

@@ -1,0 +1,263 @@
+import { act, fireEvent, render, screen, waitFor, within } from '@testing-library/react'
+import userEvent from '@testing-library/user-event'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { benchCandidate, supply } from './_candidates'
+import { Bench } from './bench'
+
+interface Sent {
+  url: string
+  method: string
+  body: Record<string, unknown> | null
+}
+
+let sent: Sent[]
+let answerGrade: () => Response | Promise<Response>
+let queue: ReturnType<typeof supply>
+
+beforeEach(() => {
+  sent = []
+  queue = supply([1, 2, 3])
+  answerGrade = () => Response.json({})
+  localStorage.clear()
+  vi.stubGlobal('fetch', async (url: string, init: RequestInit = {}) => {
+    const method = init.method ?? 'GET'
+    sent.push({ url, method, body: init.body ? (JSON.parse(String(init.body)) as Record<string, unknown>) : null })
+    if (method === 'PUT') return answerGrade()
+    return Response.json(method === 'GET' ? { ...queue, until: '' } : {})
+  })
+})
+afterEach(() => vi.unstubAllGlobals())
+
+const grades = () => sent.filter(({ method }) => method === 'PUT')
+const name = () => screen.getByRole('heading', { level: 1 }).textContent
+const saved = () => document.querySelector('[data-save-line]')?.textContent
+
+/** Pictures arrive, and longer passes than a key takes to bounce. */
+async function look(): Promise<void> {
+  for (const image of document.querySelectorAll('figure img')) fireEvent.load(image)
+  await act(() => new Promise((resolve) => setTimeout(resolve, 140)))
+}
+
+async function open(first = queue) {
+  const user = userEvent.setup()
+  const view = render(
+    <Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...first, until: '' }} />,
+  )
+  await look()
+  return { user, ...view }
+}
+
+describe('the bench', () => {
+  it('grades by key, shows the next at once, confirms, and sends in the background', async () => {
+    let release = () => {}
+    answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    const { user } = await open()
+    await user.keyboard('b')
+    expect(name()).toBe('SWS-2')
+    expect(screen.getByText(/given to/)).toHaveTextContent('given to SWS-1')
+    expect(saved()).toBe('1 waiting')
+    release()
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    expect(grades()).toMatchObject([
+      { url: '/api/campaigns/north/candidates/1/grade', body: { grade: 'B', tags: [], remark: null, view: 'colour' } },
+    ])
+    expect(grades()[0].body?.seconds).toBeGreaterThan(0)
+    expect(grades()[0].body?.id).toMatch(/^[0-9a-f]{32}$/)
+  })
+
+  it('grades by mouse and lets go of the button, so that Space does not press it again', async () => {
+    const { user } = await open()
+    await user.click(screen.getByRole('button', { name: /^A: Sure/ }))
+    await look()
+    await user.keyboard(' ')
+    expect(name()).toBe('SWS-2')
+    expect(grades()).toHaveLength(1)
+  })
+
+  it('takes no grade from a key that bounces, is held down, or has a modifier', async () => {
+    const { user } = await open()
+    await user.keyboard('nn')
+    expect(name()).toBe('SWS-2')
+    await look()
+    await user.keyboard('{Control>}n{/Control}')
+    fireEvent.keyDown(window, { key: 'n', repeat: true })
+    expect(name()).toBe('SWS-2')
+  })
+
+  it('takes no judgement of a picture that has not arrived, but takes cannot judge', async () => {
+    const user = userEvent.setup()
+    render(<Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...queue, until: '' }} />)
+    await act(() => new Promise((resolve) => setTimeout(resolve, 140)))
+    await user.keyboard('a')
+    expect(name()).toBe('SWS-1')
+    expect(screen.getByText(/still on its way/)).toBeInTheDocument()
+    await user.keyboard('u')
+    expect(name()).toBe('SWS-2')
+  })
+
+  it('types a remark without grading, keeps it on Enter and sends it with the grade', async () => {
+    const { user } = await open()
+    await user.keyboard('m')
+    await user.keyboard('a blue curve, can be N{Shift>}{Enter}{/Shift}x{Enter}')
+    expect(name()).toBe('SWS-1')
+    expect(grades()).toHaveLength(0)
+    expect(screen.queryByRole('textbox')).not.toBeInTheDocument()
+    await user.keyboard('c')
+    await waitFor(() => expect(grades()).toHaveLength(1))
+    expect(grades()[0].body?.remark).toBe('a blue curve, can be N\nx')
+  })
+
+  it('picks tags by key, and a grade closes the chooser', async () => {
+    const { user } = await open()
+    await user.keyboard('t13')
+    expect(screen.getByRole('button', { name: 'arc', pressed: true })).toBeInTheDocument()
+    expect(screen.getByRole('button', { name: /^View 1/, pressed: true })).toBeInTheDocument()
+    await user.keyboard('a')
+    await waitFor(() => expect(grades()).toHaveLength(1))
+    expect(grades()[0].body?.tags).toEqual(['arc', 'two images'])
+    expect(screen.getByRole('button', { name: /What do you see/ })).toHaveAttribute('aria-expanded', 'false')
+  })
+
+  it('goes back with the given grade marked, corrects it under a new id, and returns', async () => {
+    const { user } = await open()
+    await user.keyboard('b')
+    await look()
+    await user.keyboard('z')
+    expect(name()).toBe('SWS-1')
+    expect(screen.getByRole('button', { name: /^B: / })).toHaveAttribute('aria-pressed', 'true')
+    await look()
+    await user.keyboard('n')
+    expect(name()).toBe('SWS-2')
+    await waitFor(() => expect(grades().map(({ body }) => body?.grade)).toEqual(['B', 'N']))
+    expect(grades()[0].body?.id).not.toBe(grades()[1].body?.id)
+  })
+
+  it('sends nothing when the same grade is given again or kept', async () => {
+    const { user } = await open()
+    await user.keyboard('b')
+    await user.keyboard('z')
+    await look()
+    await user.keyboard('b')
+    await user.keyboard('zk')
+    expect(name()).toBe('SWS-2')
+    expect(grades()).toHaveLength(1)
+  })
+
+  it('says afterwards why a picture could not be judged', async () => {
+    const { user } = await open()
+    await user.keyboard('uw2')
+    await waitFor(() => expect(grades()).toHaveLength(2))
+    expect(grades()[1].body).toMatchObject({ grade: 'U', reason: 'too faint' })
+    expect(screen.getByText(/given to/)).toHaveTextContent('too faint')
+  })
+
+  it('changes views by key and blinks against the one before while X is held', async () => {
+    const { user } = await open()
+    const shown = () => document.querySelector('figure img[aria-hidden="false"]')?.getAttribute('alt')
+    await user.keyboard('2')
+    expect(shown()).toBe('SWS-1, deep')
+    await user.keyboard('{x>}')
+    expect(shown()).toBe('SWS-1, colour')
+    await user.keyboard('{/x}')
+    expect(shown()).toBe('SWS-1, deep')
+  })
+
+  it('tries again after a failure and never loses the grade', async () => {
+    let failures = 1
+    answerGrade = () => (failures-- > 0 ? new Response(null, { status: 503 }) : Response.json({}))
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. The server has trouble/))
+    const leaving = new Event('beforeunload', { cancelable: true })
+    window.dispatchEvent(leaving)
+    expect(leaving.defaultPrevented).toBe(true)
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
+    expect(grades()[0].body?.id).toBe(grades()[1].body?.id)
+  })
+
+  it('shows in words what the server refused, and does not count it', async () => {
+    const detail = 'Others have filled this candidate.'
+    answerGrade = () => Response.json({ detail }, { status: 409 })
+    const { user } = await open()
+    await user.keyboard('a')
+    const alert = await screen.findByRole('alert')
+    expect(alert).toHaveTextContent(`SWS-1, your A: ${detail}`)
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '0')
+    await user.click(within(alert).getByRole('button', { name: 'I have read this' }))
+    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    expect(grades()).toHaveLength(1)
+  })
+})
+
+describe('the keys', () => {
+  it('are listed in a dialog that opens by key, takes no grades and closes with Esc', async () => {
+    const { user } = await open()
+    await user.keyboard('h')
+    const dialog = screen.getByRole('dialog', { name: 'Keys at the bench' })
+    expect(dialog).toContainElement(document.activeElement as HTMLElement)
+    await user.keyboard('a')
+    await user.keyboard('{Escape}')
+    expect(screen.queryByRole('dialog')).not.toBeInTheDocument()
+    expect(name()).toBe('SWS-1')
+  })
+
+  it('can be switched off, are then dead, and stay so for this person after a reload', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('h')
+    await user.click(screen.getByRole('switch'))
+    await user.keyboard('{Escape}')
+    await user.keyboard('a')
+    expect(name()).toBe('SWS-1')
+    unmount()
+    const again = await open()
+    await again.user.keyboard('a')
+    expect(name()).toBe('SWS-1')
+    await again.user.click(screen.getByRole('button', { name: /^A: Sure/ }))
+    expect(name()).toBe('SWS-2')
+  })
+})
+
+describe('the end', () => {
+  it('says what was done in this sitting and lets one look back', async () => {
+    queue = supply([1])
+    const { user } = await open()
+    queue = supply([], { given: 1, left: 0 })
+    await user.keyboard('a')
+    expect(name()).toBe('Nothing is left for you')
+    expect(screen.getByText('In this sitting you graded one candidate: 1 sure.')).toBeInTheDocument()
+    await user.click(screen.getByRole('button', { name: /Look back/ }))
+    expect(name()).toBe('SWS-1')
+  })
+
+  it('says when the last ones are with other people', async () => {
+    queue = { ...supply([], { left: 2 }) }
+    await open()
+    expect(name()).toBe('The last 2 are on other benches')
+  })
+
+  it('says when nothing is imaged yet', async () => {
+    queue = { ...supply([]), imaged: false }
+    await open()
+    expect(name()).toBe('No pictures to grade yet')
+  })
+
+  it('takes only cannot judge for a candidate without pictures', async () => {
+    const bare = benchCandidate(1)
+    bare.views = bare.views.map((view) => ({ ...view, url: null }))
+    queue = { ...supply([]), candidates: [bare], left: 1 }
+    const { user } = await open()
+    await user.keyboard('a')
+    expect(name()).toBe('SWS-1')
+    await user.keyboard('u')
+    await waitFor(() => expect(grades()).toHaveLength(1))
+  })
+
+  it('gives back on leaving what was not graded', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    unmount()
+    await waitFor(() =>
+      expect(sent.at(-1)).toMatchObject({ method: 'DELETE', url: '/api/campaigns/north/queue?candidates=2,3' }),
+    )
+  })
+})
