@@ -11,7 +11,7 @@ import { StatePill } from '@/components/ui/state-pill'
 import { VoteStrip } from '@/components/ui/vote-strip'
 import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
 import { CandidateFacts } from './candidate-facts'
-import { GradeList } from './grade-list'
+import { GradeList, gradesInWords } from './grade-list'
 import { Position } from './position'
 import { RulingForm } from './ruling-form'
 import { RulingList, StateHistory } from './ruling-record'
@@ -115,7 +115,7 @@ function StateReason({ judgement }: { judgement: Judgement }) {
 function JudgementColumn({ judgement }: { judgement: Judgement }) {
   return (
     <>
-      <Section title={counted(judgement.grades.length, 'answer')}>
+      <Section title={gradesInWords(judgement.grades)}>
         <VoteStrip votes={judgement.votes} />
         <GradeList grades={judgement.grades} />
       </Section>

@@ -1,3 +1,4 @@
+import { counted } from '@/components/campaigns/in-words'
 import type { GradeLetter } from '@/db/schema/grading'
 import type { EvidenceGrade } from '@/lib/work/rulings/candidate-evidence'
 
@@ -15,6 +16,13 @@ const MEANING: Record<GradeLetter, string> = {
   C: 'possible',
   N: 'not a lens',
   U: 'cannot judge',
+}
+
+/** '3 grades', '2 grades, 1 cannot judge' */
+export function gradesInWords(grades: readonly Pick<EvidenceGrade, 'grade'>[]): string {
+  const aside = grades.filter(({ grade }) => grade === 'U').length
+  const given = counted(grades.length - aside, 'grade')
+  return aside > 0 ? `${given}, ${aside} cannot judge` : given
 }
 
 /** Every grade that counts: who, how long they looked, what they saw and what they said. */

@@ -19,3 +19,5 @@ export const CONSEQUENCE: Record<RulingChoice, string> = {
   open: 'It is open for more looks and stays open until you rule again or let the verdict decide.',
   'by-verdict': 'Your ruling steps back: the newest verdict holds now, and later ones will.',
 }
+
+export const UNDECIDED = 'Choose what to rule and say why: everybody in the campaign can read the reason.'

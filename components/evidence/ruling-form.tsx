@@ -8,7 +8,7 @@ import { KeyCap } from '@/components/ui/key-cap'
 import type { EvidenceRuling } from '@/lib/work/rulings/candidate-evidence'
 import { describeOutcome } from '@/lib/work/rulings/describe-ruling'
 import type { RulingChoice } from '@/lib/work/rulings/ruling-input'
-import { CHOICES, CONSEQUENCE } from './ruling-choices'
+import { CHOICES, CONSEQUENCE, UNDECIDED } from './ruling-choices'
 
 /**
  * A ruling: what, and why. The choice can be held by the screen around it, which lets keys choose. Ctrl and Enter rule from
@@ -84,11 +84,14 @@ export function RulingForm({
               checked={choice === one.choice}
               onChange={() => choose(one.choice)}
               aria-label={one.action}
-              aria-invalid={choiceFault ? true : undefined}
               className="sr-only"
             />
             {one.label}
-            {keys ? <KeyCap>{one.key}</KeyCap> : null}
+            {keys && !one.label.endsWith(one.key) ? (
+              <span aria-hidden="true" className="hidden lg:inline">
+                <KeyCap>{one.key}</KeyCap>
+              </span>
+            ) : null}
           </label>
         ))}
       </fieldset>
@@ -123,7 +126,7 @@ export function RulingForm({
           {reasonFault}
         </p>
       ) : null}
-      <p className="min-h-[1.2rem] text-note text-mute">{choice ? CONSEQUENCE[choice] : ''}</p>
+      <p className="text-note text-mute">{choice ? CONSEQUENCE[choice] : UNDECIDED}</p>
       {state.errors && Object.keys(state.errors).length > 0 ? null : <FormNote state={state} />}
     </form>
   )

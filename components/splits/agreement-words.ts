@@ -4,9 +4,9 @@
  */
 export function alphaInWords(alpha: number): string {
   if (alpha >= 0.8) return 'reliable'
-  if (alpha >= 0.667) return 'enough for tentative conclusions'
-  if (alpha > 0) return 'below what tentative conclusions ask for'
-  return 'no better than chance'
+  if (alpha >= 0.667) return 'tentative'
+  if (alpha > 0) return 'low'
+  return 'none beyond chance'
 }
 
 /** What a kappa means, after J. R. Landis and G. G. Koch (1977), Biometrics 33, 159: benchmarks that they call arbitrary. */

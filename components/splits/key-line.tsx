@@ -16,7 +16,7 @@ export function KeyLine({ on, onSwitch }: { on: boolean; onSwitch: (on: boolean)
             </span>
           ))
         : null}
-      <label className="inline-flex min-h-6 items-center gap-1.5">
+      <label className="ml-auto inline-flex min-h-6 items-center gap-1.5">
         <input type="checkbox" checked={on} onChange={(event) => onSwitch(event.target.checked)} />
         Single keys
       </label>

@@ -10,24 +10,12 @@ import type { NewestRun } from '@/lib/work/consensus/newest-run'
 
 export type RunAction = (state: FormState) => Promise<FormState>
 
-function Measure({
-  name,
-  value,
-  words,
-  note,
-}: {
-  name: string
-  value: number | null
-  words: string
-  note: string | null
-}) {
+function Measure({ name, value, words }: { name: string; value: number | null; words: string }) {
   return (
-    <div className="min-w-0 flex-1 basis-36">
-      <dt className="text-note text-mute">{name}</dt>
-      <dd>
-        <span className="figures text-title">{value === null ? '–' : value.toFixed(2).replace('-', '−')}</span>{' '}
-        <span className="text-small">{value === null ? 'not defined' : words}</span>
-        <span className="block text-note text-mute">{note}</span>
+    <div className="flex items-baseline justify-between gap-3">
+      <dt className="text-small text-mute">{name}</dt>
+      <dd className="whitespace-nowrap text-small">
+        {words} <span className="figures text-title">{value === null ? '–' : value.toFixed(2).replace('-', '−')}</span>
       </dd>
     </div>
   )
@@ -39,12 +27,17 @@ export function RunPanel({ run, action }: { run: NewestRun | null; action: RunAc
   const { summary } = run ?? {}
   return (
     <section aria-label="Consensus" className="flex flex-col gap-3 px-5 py-4">
-      <div className="flex flex-wrap items-center justify-between gap-2">
-        <h2 className="text-small font-semibold">
-          {run ? `Consensus run of ${moment(run.createdAt)}` : 'The consensus has not run yet'}
-        </h2>
+      <div className="flex items-center justify-between gap-3">
+        <div>
+          <h2 className="text-small font-semibold">{run ? 'Newest consensus' : 'Consensus'}</h2>
+          {run ? (
+            <p className="text-note text-mute">{moment(run.createdAt)}</p>
+          ) : (
+            <p className="text-note text-mute">not run yet</p>
+          )}
+        </div>
         <form action={submit}>
-          <Button type="submit" disabled={pending}>
+          <Button tone={run ? 'plain' : 'lamp'} type="submit" disabled={pending} className="whitespace-nowrap">
             {pending ? 'Running…' : 'Run consensus now'}
           </Button>
         </form>
@@ -52,25 +45,30 @@ export function RunPanel({ run, action }: { run: NewestRun | null; action: RunAc
       <FormNote state={state} />
       {summary ? (
         <>
-          <p className="text-note text-mute">
-            {counted(summary.grades, 'grade')} of {counted(summary.graders, 'grader')} on{' '}
-            {counted(summary.candidates, 'candidate')}, rule version {run?.ruleVersion}. Verdicts: {summary.confirmed}{' '}
-            confirmed, {summary.setAside} set aside, {summary.split} split, {summary.open} open.
-          </p>
-          <dl className="flex flex-wrap gap-x-5 gap-y-2">
+          <dl className="flex flex-col gap-0.5">
             <Measure
               name="Krippendorff’s α, ordinal"
               value={summary.alphaOrdinal}
-              words={summary.alphaOrdinal === null ? '' : alphaInWords(summary.alphaOrdinal)}
-              note={summary.alphaNote}
+              words={summary.alphaOrdinal === null ? 'not defined' : alphaInWords(summary.alphaOrdinal)}
             />
             <Measure
               name="Fleiss’ κ"
               value={summary.fleissKappa}
-              words={summary.fleissKappa === null ? '' : kappaInWords(summary.fleissKappa)}
-              note={summary.kappaNote}
+              words={summary.fleissKappa === null ? 'not defined' : kappaInWords(summary.fleissKappa)}
             />
           </dl>
+          <details className="text-note text-mute">
+            <summary className="min-h-6">What these are over</summary>
+            <div className="flex flex-col gap-1.5 pt-1">
+              <p>
+                {counted(summary.grades, 'grade')} of {counted(summary.graders, 'grader')} on{' '}
+                {counted(summary.candidates, 'candidate')}, rule version {run?.ruleVersion}. Verdicts:{' '}
+                {summary.confirmed} confirmed, {summary.setAside} set aside, {summary.split} split, {summary.open} open.
+              </p>
+              <p>α: {summary.alphaNote} Krippendorff asks for 0.80, and for 0.67 where conclusions are tentative.</p>
+              <p>κ: {summary.kappaNote} Its words are those of Landis and Koch (1977).</p>
+            </div>
+          </details>
         </>
       ) : (
         <p className="text-note text-mute">

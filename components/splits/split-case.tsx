@@ -3,7 +3,7 @@
 import Link from 'next/link'
 import type { RefObject } from 'react'
 import { counted } from '@/components/campaigns/in-words'
-import { GradeList } from '@/components/evidence/grade-list'
+import { GradeList, gradesInWords } from '@/components/evidence/grade-list'
 import { Position } from '@/components/evidence/position'
 import { arithmeticInWords, thresholdsInWords } from '@/components/evidence/verdict-arithmetic'
 import { RulingForm } from '@/components/evidence/ruling-form'
@@ -64,7 +64,7 @@ export function SplitCase({
         </header>
         <div className="grid items-start gap-x-6 gap-y-5 xl:grid-cols-[minmax(0,1fr)_18rem]">
           <div className="flex min-w-0 flex-col gap-4">
-            <div className="lg:max-w-[min(100%,calc(100dvh-21rem))] lg:min-w-96">
+            <div className="lg:max-w-[min(100%,calc(100dvh-25.5rem))] lg:min-w-[min(100%,24rem)]">
               <ViewsTray
                 name={evidence.name}
                 pictures={evidence.pictures}
@@ -78,7 +78,7 @@ export function SplitCase({
                 <span className="font-semibold text-text">
                   {judgement.state === 'split' ? 'Why it is split.' : `Why it is ${judgement.state}.`}
                 </span>{' '}
-                {judgement.stateReason}
+                {withoutState(judgement.stateReason)}
               </p>
               {judgement.state === 'split' && decides.length > 0 ? (
                 <p>
@@ -94,7 +94,7 @@ export function SplitCase({
           </div>
           <div className="flex min-w-0 flex-col gap-5">
             <section aria-label="Grades" className="flex flex-col gap-2">
-              <h3 className="text-small font-semibold text-mute">{counted(grades.length, 'answer')}</h3>
+              <h3 className="text-small font-semibold text-mute">{gradesInWords(grades)}</h3>
               <GradeList grades={grades} />
             </section>
             {rulings.length > 0 ? (
@@ -106,7 +106,7 @@ export function SplitCase({
           </div>
         </div>
       </div>
-      <footer className="sticky bottom-0 border-t border-line bg-raise/95 px-5 py-3 backdrop-blur-sm lg:static lg:bg-raise">
+      <footer className="border-t border-line bg-raise px-5 py-3">
         {judgement.calibration ? (
           <Notice>This is a calibration stamp: its truth is known, so it is never ruled on.</Notice>
         ) : (
@@ -124,4 +124,10 @@ export function SplitCase({
       </footer>
     </article>
   )
+}
+
+/** 'Split: grades A, N' reads on from 'Why it is split.' as 'Grades A, N'. */
+function withoutState(reason: string): string {
+  const rest = reason.replace(/^(Split|Open|Confirmed|Set aside): /, '')
+  return rest.charAt(0).toUpperCase() + rest.slice(1)
 }

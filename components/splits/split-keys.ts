@@ -35,10 +35,9 @@ export function splitCommand(event: Pressed): SplitCommand | null {
 
 /** For the help line. */
 export const SPLIT_KEYS: { keys: string[]; does: string }[] = [
-  { keys: ['J', 'K'], does: 'next, previous case' },
+  { keys: ['J', 'K'], does: 'next, previous' },
   { keys: ['1', '…', '9'], does: 'view' },
-  { keys: ['A', 'B', 'C', 'N', 'O'], does: 'choose a ruling' },
+  { keys: ['A', 'B', 'C', 'N', 'O'], does: 'choose' },
   { keys: ['R'], does: 'reason' },
   { keys: ['Ctrl', 'Enter'], does: 'rule' },
-  { keys: ['Esc'], does: 'leave the reason' },
 ]

@@ -34,20 +34,20 @@ export interface SplitsScreenProps {
   runAction: RunAction
 }
 
+const AFRESH = { key: '', view: 0, choice: null }
+
 /** Where a lead settles disagreements: the splits at the left, the chosen case at the right, the ruling at the bottom. */
 export function SplitsScreen(props: SplitsScreenProps) {
   const { slug, splits, evidence } = props
   const router = useRouter()
   const [keysOn, setKeysOn] = useKeySwitch(props.personId)
   const [chosenId, showChosen] = useOptimistic(evidence?.id ?? null)
-  const [perCase, setPerCase] = useState<{ id: number | null; view: number; choice: RulingChoice | null }>({
-    id: null,
-    view: 0,
-    choice: null,
-  })
+  // A ruling ends a case's view and choice as moving on does, so that coming back to reverse it starts afresh.
+  const caseKey = `${evidence?.id}/${evidence?.judgement?.rulings[0]?.id}`
+  const [perCase, setPerCase] = useState<{ key: string; view: number; choice: RulingChoice | null }>(AFRESH)
   const reasonRef = useRef<HTMLTextAreaElement>(null)
   const id = evidence?.id ?? null
-  const now = perCase.id === id ? perCase : { id, view: 0, choice: null }
+  const now = perCase.key === caseKey ? perCase : { ...AFRESH, key: caseKey }
   const hrefOf = (caseId: number) => `/campaigns/${slug}/splits?case=${caseId}`
   const views = evidence?.pictures.views.length ?? 0
   const judgement = evidence?.judgement ?? null
@@ -82,10 +82,14 @@ export function SplitsScreen(props: SplitsScreenProps) {
       <div className="flex min-h-0 min-w-0 flex-col lg:border-r lg:border-line">
         <header className="px-5 pb-3 pt-5">
           <h1 className="text-title font-semibold">
-            {splits.total === 0 ? 'Nothing is split' : counted(splits.total, 'split')}
+            {splits.total > 0 ? counted(splits.total, 'split') : props.run ? 'Nothing is split' : 'No splits yet'}
           </h1>
           <p className="text-note text-mute">
-            {splits.total === 0 ? 'The rule could decide whatever has its grades.' : 'The likeliest lenses first'}
+            {splits.total > 0
+              ? 'The likeliest lenses first'
+              : props.run
+                ? 'The rule could decide whatever has its grades.'
+                : 'They come with the first consensus run.'}
           </p>
         </header>
         <SplitList splits={splits} chosenId={chosenId} hrefOf={hrefOf} />
@@ -103,7 +107,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
           <>
             <div className="min-h-0 flex-1">
               <SplitCase
-                key={evidence.id}
+                key={caseKey}
                 slug={slug}
                 evidence={evidence}
                 judgement={judgement}

@@ -1,6 +1,7 @@
 import fc from 'fast-check'
-import { sql } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import { describe, expect, it } from 'vitest'
+import type { DB } from '@/db/schema'
 import { decide } from '@/lib/science/agreement/mean-rule'
 import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { giveGrade, giveGrades } from '@/lib/work/consensus/_give-grade'
@@ -29,13 +30,56 @@ const step: fc.Arbitrary<Step> = fc.oneof(
   }),
 )
 
+async function expectConsistent(db: Kysely<DB>, id: number): Promise<void> {
+  const candidate = await db.selectFrom('candidate').selectAll().where('id', '=', id).executeTakeFirstOrThrow()
+  const rulings = await db
+    .selectFrom('ruling')
+    .selectAll()
+    .where('candidate_id', '=', id)
+    .orderBy('id', 'desc')
+    .execute()
+  const verdicts = await db
+    .selectFrom('verdict')
+    .selectAll()
+    .where('candidate_id', '=', id)
+    .orderBy('id', 'desc')
+    .execute()
+  const ruling = rulings.at(0)
+  const verdict = verdicts.at(0)
+  const ruled = ruling && ruling.outcome !== 'by verdict'
+  expect(candidate.state).toBe(ruled ? ruling.outcome : (verdict?.outcome ?? 'open'))
+  if (ruled) expect([candidate.state_cause, candidate.state_cause_id]).toEqual(['ruling', ruling.id])
+  else if (verdict) expect([candidate.state_cause, candidate.state_cause_id]).toEqual(['verdict', verdict.id])
+  expect(candidate.ruling_id).toBe(ruling?.id ?? null)
+  expect(candidate.verdict_id).toBe(verdict?.id ?? null)
+
+  // The changes are a chain from open to the present state, each with a cause that exists and is this candidate's.
+  let state = 'open'
+  const changes = await db.selectFrom('state_change').selectAll().where('candidate_id', '=', id).orderBy('id').execute()
+  for (const change of changes) {
+    expect(change.from_state).toBe(state)
+    expect(change.to_state).not.toBe(state)
+    state = change.to_state
+    const causes = change.cause === 'ruling' ? rulings : verdicts
+    expect(causes.map((row) => row.id)).toContain(change.cause_id)
+  }
+  expect(state).toBe(candidate.state)
+
+  // In the catalogue exactly while it is confirmed, and never entered or left twice running.
+  const entries = await db.selectFrom('entry').select('event').where('candidate_id', '=', id).orderBy('id').execute()
+  const events = entries.map((row) => row.event)
+  expect(events).toEqual(events.map((_, index) => (index % 2 === 0 ? 'entered' : 'left')))
+  expect(events.at(-1) === 'entered').toBe(candidate.state === 'confirmed')
+}
+
 describe('the state of a candidate', () => {
   it('is what its newest ruling says, else its newest verdict, else open, whatever happens in which order', async () => {
+    const { db, campaign, graders, lead, permit } = await makeScenario(RULE)
+    const leads = await permit(lead, 'lead')
+    let number = 0
     await fc.assert(
       fc.asyncProperty(fc.array(step, { minLength: 1, maxLength: 14 }), async (steps) => {
-        const { db, campaign, graders, lead, permit } = await makeScenario(RULE)
-        const leads = await permit(lead, 'lead')
-        const id = await addImagedCandidate(db, campaign, 'one')
+        const id = await addImagedCandidate(db, campaign, `candidate ${(number += 1)}`)
         const standing = new Map<number, number>()
         for (const next of steps) {
           if (next.do === 'run') await runConsensus(db, leads)
@@ -47,40 +91,12 @@ describe('the state of a candidate', () => {
             const grade = next.outcome === 'confirmed' ? 'A' : null
             await ruleOnCandidate(db, leads, id, { outcome: next.outcome, grade, reason: 'why' }).catch(() => {})
           }
-
-          const candidate = await db.selectFrom('candidate').selectAll().executeTakeFirstOrThrow()
-          const newest = { orderBy: 'desc' } as const
-          const ruling = await db.selectFrom('ruling').selectAll().orderBy('id', newest.orderBy).executeTakeFirst()
-          const verdict = await db.selectFrom('verdict').selectAll().orderBy('id', newest.orderBy).executeTakeFirst()
-          const ruled = ruling && ruling.outcome !== 'by verdict'
-          expect(candidate.state).toBe(ruled ? ruling.outcome : (verdict?.outcome ?? 'open'))
-          if (ruled) expect([candidate.state_cause, candidate.state_cause_id]).toEqual(['ruling', ruling.id])
-          else if (verdict) expect([candidate.state_cause, candidate.state_cause_id]).toEqual(['verdict', verdict.id])
-          expect(candidate.ruling_id).toBe(ruling?.id ?? null)
-          expect(candidate.verdict_id).toBe(verdict?.id ?? null)
-
-          // The changes are a chain from open to the present state, each with a cause that exists.
-          const changes = await db.selectFrom('state_change').selectAll().orderBy('id').execute()
-          let state = 'open'
-          for (const change of changes) {
-            expect(change.from_state).toBe(state)
-            expect(change.to_state).not.toBe(state)
-            state = change.to_state
-            const causes = await db.selectFrom(change.cause).select('id').where('id', '=', change.cause_id).execute()
-            expect(causes).toHaveLength(1)
-          }
-          expect(state).toBe(candidate.state)
-
-          // In the catalogue exactly while it is confirmed, and never entered or left twice running.
-          const events = (await db.selectFrom('entry').select('event').orderBy('id').execute()).map((row) => row.event)
-          expect(events).toEqual(events.map((_, index) => (index % 2 === 0 ? 'entered' : 'left')))
-          expect(events.at(-1) === 'entered').toBe(candidate.state === 'confirmed')
+          await expectConsistent(db, id)
         }
-        await db.destroy()
       }),
       { numRuns: 60, seed: 20261201 },
     )
-  })
+  }, 60_000)
 
   it('follows the rule of the mean: the stored verdict is the one that its grades give', async () => {
     const { db, campaign, graders, lead, permit } = await makeScenario(RULE)
