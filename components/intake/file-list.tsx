@@ -44,7 +44,7 @@ export function FileList({
           onChange={(event) => narrow({ search: event.target.value })}
           className="min-h-8 w-44 rounded-control border border-edge bg-well px-2.5 text-small placeholder:text-mute"
         />
-        <div className="ml-auto flex gap-3">{children}</div>
+        <div className="flex gap-3 md:ml-auto">{children}</div>
       </div>
       {page.files.length > 0 ? (
         <FileTable files={page.files} campaignPath={campaignPath} />

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import type { FitsHeader } from '@/lib/science/fits/fits-types'
 import { bandOfFilter, bandOfHeader, bandsOfCube } from './band-of-header'
 
 const GRI = ['g', 'r', 'i']
@@ -48,7 +49,7 @@ describe('the planes of a cube', () => {
     expect(bandsOfCube(header, 3, GRI)).toEqual(bands)
   })
 
-  it.each([{ BANDS: 'g,r' }, { BANDS: 'g,g,i' }, { FILTER1: 'g', FILTER2: 'r' }, {}])(
+  it.each<FitsHeader>([{ BANDS: 'g,r' }, { BANDS: 'g,g,i' }, { FILTER1: 'g', FILTER2: 'r' }, {}])(
     'are not named when %j leaves one open',
     (header) => {
       expect(bandsOfCube(header, 3, GRI)).toBeNull()

@@ -16,7 +16,6 @@ import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { isoTime } from '@/lib/platform/clock'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
-import { CURABLE_FAULTS } from '@/lib/work/intake/refusals'
 import type { CandidateOutcome } from './worker-tasks'
 
 export interface Campaigned {
@@ -106,8 +105,8 @@ async function setFates(db: Kysely<DB>, outcomes: readonly CandidateOutcome[], n
   }
   for (const { to, ids } of groups.values()) {
     await setFileFates(db, ids, to, now)
-    // What is refused for its name stands in nobody's way: the same bytes under a better name are read.
-    if (to.fate === 'refused' && CURABLE_FAULTS.includes(to.fault ?? '')) await releaseDuplicates(db, ids, now)
+    // What is refused stands in nobody's way: the same bytes under another name are read for themselves.
+    if (to.fate === 'refused') await releaseDuplicates(db, ids, now)
   }
 }
 

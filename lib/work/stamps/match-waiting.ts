@@ -3,6 +3,7 @@ import {
   hasManifestRows,
   listHeldPlanes,
   listManifestRowsOfBases,
+  releaseDuplicates,
   setFileFates,
   type WaitingFile,
 } from '@/db/queries/intake'
@@ -30,7 +31,10 @@ export interface MatchedPage {
 }
 
 export async function refuse(tools: ImagingTools, fileId: number, refusal: Refusal): Promise<void> {
-  await setFileFates(tools.db, [fileId], { fate: 'refused', ...refusal, duplicateOf: null }, isoTime())
+  await tools.db.transaction().execute(async (transaction) => {
+    await setFileFates(transaction, [fileId], { fate: 'refused', ...refusal, duplicateOf: null }, isoTime())
+    await releaseDuplicates(transaction, [fileId], isoTime())
+  })
 }
 
 /** Matches a page of stored files by manifest and name pattern. */

@@ -49,6 +49,9 @@ export async function runImaging(
   const lane = async () => {
     for (let task = tasks[next++]; task; task = tasks[next++]) {
       const outcomes = await imageTask(tools, work, task)
+      for (const { name, imagingFault } of outcomes) {
+        if (imagingFault) log.warn({ candidate: name, imagingFault }, 'candidate not imaged')
+      }
       const facts = new Map(task.map((item) => [item.candidate.name, item.facts]))
       const kept = keepPositions
         ? outcomes.map((one) => ({ ...one, position: null, pixelScaleArcsec: null }))

@@ -1,0 +1,70 @@
+import { render, screen } from '@testing-library/react'
+import userEvent from '@testing-library/user-event'
+import { describe, expect, it, vi } from 'vitest'
+import { DropZone } from './drop-zone'
+import { UploadProgress } from './upload-progress'
+import type { UploadState } from './upload-queue'
+
+const state = (change: Partial<UploadState>): UploadState => ({
+  total: 36,
+  done: 0,
+  duplicates: 0,
+  bytes: 1000,
+  bytesSent: 0,
+  sending: [],
+  failed: [],
+  active: false,
+  ...change,
+})
+
+describe('the progress of uploads', () => {
+  it('is nothing before anything is sent', () => {
+    const { container } = render(<UploadProgress state={state({ total: 0 })} left={[]} onRetry={() => {}} />)
+    expect(container).toBeEmptyDOMElement()
+  })
+
+  it('shows the whole and each file under way', () => {
+    const sending = [{ id: 1, name: 'SWS1_g.fits', bytes: 200, sent: 50, fault: null }]
+    render(
+      <UploadProgress state={state({ active: true, done: 4, bytesSent: 250, sending })} left={[]} onRetry={() => {}} />,
+    )
+    expect(screen.getByRole('status')).toHaveTextContent('Sending: 4 of 36 files are on the server.')
+    expect(screen.getByRole('progressbar', { name: 'Files sent' })).toHaveAttribute('aria-valuenow', '25')
+    expect(screen.getByRole('progressbar', { name: 'SWS1_g.fits' })).toHaveAttribute('aria-valuenow', '25')
+  })
+
+  it('names what did not arrive and why, and sends it again on a click', async () => {
+    const onRetry = vi.fn()
+    const failed = [{ id: 1, name: 'SWS1_g.fits', bytes: 1, sent: 0, fault: 'The connection broke.' }]
+    render(<UploadProgress state={state({ done: 35, failed })} left={[]} onRetry={onRetry} />)
+    expect(screen.getByRole('alert')).toHaveTextContent('SWS1_g.fits: The connection broke.')
+    await userEvent.click(screen.getByRole('button', { name: 'Send them again' }))
+    expect(onRetry).toHaveBeenCalledOnce()
+  })
+
+  it('says how many were here before', () => {
+    render(<UploadProgress state={state({ done: 36, duplicates: 2 })} left={[]} onRetry={() => {}} />)
+    expect(screen.getByRole('status')).toHaveTextContent('36 files sent, 2 of them here before.')
+  })
+})
+
+describe('the place to send files', () => {
+  it('hands on what was chosen and can be given the same again', async () => {
+    const onChosen = vi.fn()
+    render(<DropZone onChosen={onChosen} />)
+    const input = screen.getByLabelText('Files to send')
+    for (const times of [1, 2]) {
+      await userEvent.upload(input, new File(['x'], 'SWS1_g.fits'))
+      expect(onChosen).toHaveBeenCalledTimes(times)
+    }
+    expect(onChosen.mock.calls[0][0].files).toMatchObject([{ name: 'SWS1_g.fits' }])
+  })
+
+  it('opens by keyboard', async () => {
+    render(<DropZone onChosen={() => {}} />)
+    const click = vi.spyOn(screen.getByLabelText('Files to send'), 'click')
+    await userEvent.tab()
+    await userEvent.keyboard('{Enter}')
+    expect(click).toHaveBeenCalledOnce()
+  })
+})
