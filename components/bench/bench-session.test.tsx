@@ -196,3 +196,15 @@ describe('a refused grade', () => {
     expect(onBench(act(back, { type: 'refused', candidateId: 2 }))).toBe(3)
   })
 })
+
+describe('grades of an earlier visit', () => {
+  it('that are still on their way take their candidates off the bench and count as given', () => {
+    const session = act(openSession(supply([1, 2, 3], { given: 5 })), {
+      type: 'found waiting',
+      candidateIds: [1, 9],
+      firsts: 1,
+    })
+    expect(onBench(session)).toBe(2)
+    expect(session).toMatchObject({ view: 'colour', counts: { given: 6, left: 2 } })
+  })
+})

@@ -73,6 +73,8 @@ export type BenchAction =
       resumed: boolean
     }
   | { type: 'refused'; candidateId: number }
+  /** Grades of an earlier visit that are still on their way, found when the page opened. */
+  | { type: 'found waiting'; candidateIds: number[]; firsts: number }
 
 export const EMPTY_DRAFT: Draft = { tags: [], remark: '' }
 
@@ -149,6 +151,8 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
       return refilled(session, action)
     case 'refused':
       return refused(session, action.candidateId)
+    case 'found waiting':
+      return foundWaiting(session, action)
   }
 }
 
@@ -249,4 +253,14 @@ function refused(session: BenchSession, candidateId: number): BenchSession {
     last: session.last?.candidateId === candidateId ? null : session.last,
     ...(lookingBack === index ? firstView(session.upcoming[0]) : {}),
   }
+}
+
+function foundWaiting(
+  session: BenchSession,
+  { candidateIds, firsts }: BenchAction & { type: 'found waiting' },
+): BenchSession {
+  const upcoming = session.upcoming.filter(({ id }) => !candidateIds.includes(id))
+  const { given, left } = session.counts
+  const counts = { given: given + firsts, left: Math.max(upcoming.length, left - firsts) }
+  return { ...session, upcoming, counts, ...firstView(upcoming[0]) }
 }

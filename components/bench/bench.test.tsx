@@ -175,6 +175,22 @@ describe('the bench', () => {
     expect(grades()[0].body?.id).toBe(grades()[1].body?.id)
   })
 
+  it('after a reload sends what was left and does not show its candidate again, whatever the server lends', async () => {
+    answerGrade = () => new Response(null, { status: 503 })
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
+    unmount()
+    let release = () => {}
+    answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    await open()
+    expect(name()).toBe('SWS-2')
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuetext', '1 of 3')
+    release()
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    expect(new Set(grades().map(({ body }) => body?.id)).size).toBe(1)
+  })
+
   it('shows in words what the server refused, and does not count it', async () => {
     const detail = 'Others have filled this candidate.'
     answerGrade = () => Response.json({ detail }, { status: 409 })

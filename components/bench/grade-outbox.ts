@@ -26,6 +26,11 @@ export interface OutboxSnapshot {
   trouble: string | null
 }
 
+/** How many of them are first grades, which the server will count when they arrive. */
+export function firstsIn(waiting: readonly WaitingGrade[]): number {
+  return waiting.filter(({ first }) => first).length
+}
+
 interface Surroundings {
   /** One entry a grade, so that two tabs do not overwrite each other. null: memory only. */
   storage: Pick<Storage, 'getItem' | 'setItem' | 'removeItem' | 'key' | 'length'> | null

@@ -17,6 +17,7 @@ import {
 } from './bench-session'
 import { makeUid } from './make-uid'
 import { REMARK_ID } from './remark-box'
+import { firstsIn } from './grade-outbox'
 import { useOutbox } from './use-outbox'
 import { usePreloaded } from './use-preloaded'
 import { useSupply } from './use-supply'
@@ -39,10 +40,18 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   const look = currentLook(session)
   const candidateId = look?.candidate.id ?? null
-  const { outbox, snapshot } = useOutbox(slug, personId, ({ first: wasFirst, candidateId: id }) => {
-    if (wasFirst) dispatch({ type: 'refused', candidateId: id })
+  const { outbox, snapshot, latest } = useOutbox(slug, personId, {
+    refused: ({ first: wasFirst, candidateId: id }) => {
+      if (wasFirst) dispatch({ type: 'refused', candidateId: id })
+    },
+    found: (waiting) =>
+      dispatch({
+        type: 'found waiting',
+        candidateIds: waiting.map((grade) => grade.candidateId),
+        firsts: firstsIn(waiting),
+      }),
   })
-  useSupply({ slug, session, dispatch, outbox: () => outbox?.snapshot() ?? snapshot })
+  useSupply({ slug, session, dispatch, outbox: latest })
   usePreloaded(session.upcoming)
   const seconds = useVisibleSeconds(candidateId)
 

@@ -3,7 +3,7 @@
 import { useEffect, useEffectEvent, useRef, type Dispatch } from 'react'
 import { askQueue, giveBackQueue } from './bench-api'
 import type { BenchAction, BenchSession } from './bench-session'
-import type { OutboxSnapshot } from './grade-outbox'
+import { firstsIn, type OutboxSnapshot } from './grade-outbox'
 
 /** Ask for more when fewer than LOW lie ready, up to TARGET. */
 const LOW = 4
@@ -50,7 +50,7 @@ export function useSupply({ slug, session, dispatch, outbox }: Around): void {
         asked: wanted,
         waiting: {
           candidateIds: waiting.map(({ candidateId }) => candidateId),
-          firsts: waiting.filter(({ first }) => first).length,
+          firsts: firstsIn(waiting),
         },
         resumed,
       })
@@ -110,6 +110,7 @@ export function useSupply({ slug, session, dispatch, outbox }: Around): void {
       for (const kind of TOUCHES) window.removeEventListener(kind, touch)
       window.removeEventListener('pagehide', hidden)
       window.removeEventListener('pageshow', shown)
+      if (siblings) siblings.onmessage = null
       // A tick later, because React in development unmounts and mounts again at once.
       const ids = heldIds()
       unmounting.current = setTimeout(() => {
