@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { exactOperation, lookSteps, waldExpectedLooks } from '@/lib/science/agreement/sample-number'
+import { boundariesReaching, exactOperation, lookSteps, waldExpectedLooks } from '@/lib/science/agreement/sample-number'
 import { waldBoundaries } from '@/lib/science/agreement/sequential-test'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 
@@ -93,5 +93,39 @@ describe('exactOperation', () => {
     const sure = lookSteps([{ lens: [1, 0], notLens: [0, 1] }])
     const { lens, notLens } = exactOperation(sure, { upper: 5, lower: -5 }, noLimit)
     expect([lens.confirmed, lens.looks, notLens.setAside, notLens.looks]).toEqual([1, 1, 1, 1])
+  })
+})
+
+describe('boundariesReaching', () => {
+  const steps = lookSteps([
+    { lens: [0.5, 0.3, 0.15, 0.05], notLens: [0.02, 0.06, 0.2, 0.72] },
+    { lens: [0.3, 0.3, 0.2, 0.2], notLens: [0.05, 0.1, 0.3, 0.55] },
+  ])
+  const rates = { falseConfirmed: 0.002, missedLens: 0.05 }
+  const limits = { leastLooks: 1, mostLooks: 30 }
+  const narrow = boundariesReaching(rates, steps, limits)
+  const wald = waldBoundaries(rates)
+
+  it('lie inside Wald’s and still make no more errors than asked', () => {
+    expect(narrow.upper).toBeLessThan(wald.upper)
+    expect(narrow.lower).toBeGreaterThan(wald.lower)
+    const { lens, notLens } = exactOperation(steps, narrow, limits)
+    expect(notLens.confirmed).toBeLessThan(0.002 * 1.05)
+    expect(lens.setAside).toBeLessThan(0.05 * 1.05)
+  })
+
+  it('need fewer looks', () => {
+    const [few, many] = [narrow, wald].map((bounds) => exactOperation(steps, bounds, limits))
+    expect(few.notLens.looks).toBeLessThan(many.notLens.looks)
+    expect(few.lens.looks).toBeLessThan(many.lens.looks)
+  })
+
+  it('are Wald’s where steps end on them', () => {
+    const p = 0.7
+    const alpha = 1 / (1 + (p / (1 - p)) ** 3)
+    const exact = boundariesReaching({ falseConfirmed: alpha * 1.0001, missedLens: alpha * 1.0001 }, coin(p), noLimit)
+    // Anything above two steps is three steps.
+    expect(exact.upper).toBeGreaterThan(2 * unit(p) - 0.1)
+    expect(exact.lower).toBeLessThan(-2 * unit(p) + 0.1)
   })
 })

@@ -97,8 +97,46 @@ export function exactOperation(
   }
 }
 
+/**
+ * The narrowest boundaries whose error rates, overshoot counted in, are no higher than asked: Wald's are wider than
+ * needed, because steps pass them by a part of a step. What is undecided after the most looks counts as no error.
+ * Found by halving, first the lower boundary, then the upper, between 0 and Wald's, at a resolution of 0.04.
+ * @throws RangeError as waldBoundaries.
+ */
+export function boundariesReaching(rates: ErrorRates, steps: readonly LookStep[], limits: LookLimits): Boundaries {
+  const wald = waldBoundaries(rates)
+  const resolution = 0.04
+  const ofLenses = steps.map(({ weight, lens }) => [weight, lens] as const)
+  const ofOthers = steps.map(({ weight, notLens }) => [weight, notLens] as const)
+  // Wald's upper boundary leaves more lenses below it than a narrower one does, so that the lower one found first stays good.
+  const lower = -narrowest(-wald.lower, resolution, (distance) => {
+    const { setAside } = carryForward(ofLenses, { upper: wald.upper, lower: -distance }, limits, resolution)
+    return setAside <= rates.missedLens
+  })
+  const upper = narrowest(wald.upper, resolution, (distance) => {
+    const { confirmed } = carryForward(ofOthers, { upper: distance, lower }, limits, resolution)
+    return confirmed <= rates.falseConfirmed
+  })
+  return { upper, lower }
+}
+
+/** The smallest distance, to within the resolution, that is good enough; the widest where none below it is. */
+function narrowest(widest: number, resolution: number, isEnough: (distance: number) => boolean): number {
+  let good = widest
+  let bad = 0
+  while (good - bad > resolution) {
+    const middle = (good + bad) / 2
+    if (isEnough(middle)) good = middle
+    else bad = middle
+  }
+  return good
+}
+
+/** Evidence this improbable is not followed further. */
+const NEGLIGIBLE = 1e-12
+
 function carryForward(
-  steps: (readonly [weight: number, probability: number])[],
+  steps: readonly (readonly [weight: number, probability: number])[],
   { upper, lower }: Boundaries,
   { leastLooks, mostLooks }: LookLimits,
   resolution: number,
@@ -115,7 +153,11 @@ function carryForward(
   const size = top + reach - first + 1
   const cellOf = (weight: number) =>
     Number.isFinite(weight) ? Math.round(weight / resolution) : Math.sign(weight) * size
-  const moves = possible.map(([weight, probability]) => [cellOf(weight), probability] as const)
+  const chances = new Map<number, number>()
+  for (const [weight, probability] of possible) {
+    chances.set(cellOf(weight), (chances.get(cellOf(weight)) ?? 0) + probability)
+  }
+  const moves = [...chances]
   const clamp = (cell: number) => Math.min(size - 1, Math.max(0, cell))
 
   let mass = new Float64Array(size)
@@ -129,7 +171,6 @@ function carryForward(
       open += mass[cell]
       for (const [move, probability] of moves) next[clamp(cell + move)] += mass[cell] * probability
     }
-    if (open === 0) break
     result.looks += open
     if (look >= leastLooks) {
       for (let cell = 0; cell < size; cell++) {
@@ -140,6 +181,7 @@ function carryForward(
       }
     }
     mass = next
+    if (look >= leastLooks && open < NEGLIGIBLE) break
   }
   result.undecided = mass.reduce((sum, value) => sum + value, 0)
   return result
