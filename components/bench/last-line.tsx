@@ -12,7 +12,7 @@ function LineButton({ label, keyName, onPress }: { label: string; keyName: strin
     <button
       type="button"
       onClick={letGo(onPress)}
-      className="flex min-h-11 items-center gap-1.5 whitespace-nowrap rounded-control px-1.5 text-note text-mute underline decoration-line underline-offset-4 hover:text-text md:min-h-7 md:no-underline"
+      className="flex min-h-11 min-w-11 items-center justify-center gap-1.5 whitespace-nowrap rounded-control px-1.5 text-note text-mute underline decoration-line underline-offset-4 hover:text-text md:min-h-7 md:no-underline"
     >
       <span className="hidden md:inline">
         <KeyCap>{keyName}</KeyCap>
