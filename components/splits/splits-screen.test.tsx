@@ -135,8 +135,9 @@ function show(more: Partial<SplitsScreenProps> = {}) {
     runAction: async () => ({ done: 'Nothing has changed since the newest run, so nothing was written.' }),
     ...more,
   }
-  render(<SplitsScreen {...props} />)
-  return { ruleAction, user: userEvent.setup() }
+  const { rerender } = render(<SplitsScreen {...props} />)
+  const showCase = (id: number) => rerender(<SplitsScreen {...props} evidence={evidence(id, `SWS000${id}`)} />)
+  return { ruleAction, user: userEvent.setup(), showCase }
 }
 
 const big = () => screen.getByRole('img', { name: / of SWS0002/ })
@@ -215,6 +216,17 @@ describe('the splits page', () => {
     expect(reason()).toHaveAccessibleDescription(errors.reason)
     expect(reason()).toHaveValue('   ')
     expect(screen.getByRole('radio', { name: 'Set aside' })).toBeChecked()
+  })
+
+  it('starts every case afresh, also one that is come back to', async () => {
+    const { user, showCase } = show()
+    await user.keyboard('2b')
+    showCase(3)
+    expect(screen.getByRole('img', { name: 'Colour of SWS0003' })).toBeVisible()
+    expect(screen.getByRole('radio', { name: 'Confirm as B' })).not.toBeChecked()
+    showCase(2)
+    expect(big()).toHaveAccessibleName('Colour of SWS0002')
+    expect(screen.getByRole('radio', { name: 'Confirm as B' })).not.toBeChecked()
   })
 
   it('leaves the keys alone once they are switched off, and while a modifier is held', async () => {

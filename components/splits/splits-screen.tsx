@@ -34,7 +34,11 @@ export interface SplitsScreenProps {
   runAction: RunAction
 }
 
-const AFRESH = { key: '', view: 0, choice: null }
+interface PerCase {
+  id: number | null
+  view: number
+  choice: RulingChoice | null
+}
 
 /** Where a lead settles disagreements: the splits at the left, the chosen case at the right, the ruling at the bottom. */
 export function SplitsScreen(props: SplitsScreenProps) {
@@ -42,12 +46,11 @@ export function SplitsScreen(props: SplitsScreenProps) {
   const router = useRouter()
   const [keysOn, setKeysOn] = useKeySwitch(props.personId)
   const [chosenId, showChosen] = useOptimistic(evidence?.id ?? null)
-  // A ruling ends a case's view and choice as moving on does, so that coming back to reverse it starts afresh.
-  const caseKey = `${evidence?.id}/${evidence?.judgement?.rulings[0]?.id}`
-  const [perCase, setPerCase] = useState<{ key: string; view: number; choice: RulingChoice | null }>(AFRESH)
-  const reasonRef = useRef<HTMLTextAreaElement>(null)
   const id = evidence?.id ?? null
-  const now = perCase.key === caseKey ? perCase : { ...AFRESH, key: caseKey }
+  const [now, setNow] = useState<PerCase>({ id, view: 0, choice: null })
+  // View and choice belong to one case: another case, and one that is come back to, starts afresh.
+  if (now.id !== id) setNow({ id, view: 0, choice: null })
+  const reasonRef = useRef<HTMLTextAreaElement>(null)
   const hrefOf = (caseId: number) => `/campaigns/${slug}/splits?case=${caseId}`
   const views = evidence?.pictures.views.length ?? 0
   const judgement = evidence?.judgement ?? null
@@ -64,13 +67,13 @@ export function SplitsScreen(props: SplitsScreenProps) {
   }
   const choose = (choice: RulingChoice) => {
     if (choice === 'by-verdict' && !judgement?.standingRuling) return
-    setPerCase({ ...now, choice })
+    setNow({ ...now, choice })
     reasonRef.current?.focus()
   }
   useSplitKeys(keysOn, (command) => {
     if (command.do === 'move') move(command.step)
-    if (command.do === 'view' && command.index < views) setPerCase({ ...now, view: command.index })
-    if (command.do === 'next view' && views > 0) setPerCase({ ...now, view: (now.view + command.step + views) % views })
+    if (command.do === 'view' && command.index < views) setNow({ ...now, view: command.index })
+    if (command.do === 'next view' && views > 0) setNow({ ...now, view: (now.view + command.step + views) % views })
     if (command.do === 'choose') choose(command.choice)
     if (command.do === 'reason') reasonRef.current?.focus()
   })
@@ -107,7 +110,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
           <>
             <div className="min-h-0 flex-1">
               <SplitCase
-                key={caseKey}
+                key={evidence.id}
                 slug={slug}
                 evidence={evidence}
                 judgement={judgement}
@@ -116,7 +119,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
                 action={props.ruleAction}
                 controls={{
                   view: now.view,
-                  onView: (view) => setPerCase({ ...now, view }),
+                  onView: (view) => setNow({ ...now, view }),
                   choice: now.choice,
                   onChoose: choose,
                   reasonRef,

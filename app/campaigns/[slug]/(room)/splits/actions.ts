@@ -4,6 +4,7 @@ import { revalidatePath } from 'next/cache'
 import { redirect } from 'next/navigation'
 import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
+import { Problem } from '@/lib/platform/problems/problem'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { parseRulingForm } from '@/lib/work/rulings/ruling-input'
@@ -19,6 +20,8 @@ export async function ruleOnSplitAction(
     const { db, permit } = await permitLead(slug)
     await ruleOnCandidate(db, permit, candidateId, parseRulingForm(form))
   } catch (error) {
+    // What the lead has not seen yet, such as another lead's ruling, comes with the refusal.
+    if (error instanceof Problem && error.status === 409) revalidatePath(`/campaigns/${slug}`, 'layout')
     return failedForm(error, form)
   }
   revalidatePath(`/campaigns/${slug}`, 'layout')
