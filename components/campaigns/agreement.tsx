@@ -24,8 +24,7 @@ function Scale({ value }: { value: number }) {
 export function alphaMeaning(alpha: number): string {
   if (alpha >= 0.8) return 'Commonly taken as reliable (0.80 and up).'
   if (alpha >= 0.67) return 'Commonly taken as enough for tentative conclusions (0.67 to 0.80).'
-  if (alpha > 0)
-    return 'Better than chance, below the 0.67 commonly taken as the least. Visual grades of faint arcs often are.'
+  if (alpha > 0) return 'Better than chance, below the 0.67 commonly taken as the least.'
   return 'No better than chance. Look at the splits together and agree on what each grade means.'
 }
 

@@ -7,11 +7,12 @@ import type { MeanRule } from '@/lib/science/agreement/mean-rule'
 import { NamePatternField } from './name-pattern-field'
 import { RuleFields } from './rule-fields'
 
-export function RuleForm({ rule, action }: { rule: MeanRule; action: FormAction }) {
+export function RuleForm({ rule, action }: { rule: MeanRule & { version: number }; action: FormAction }) {
   const { state, pending, formProps } = useKeptForm(action)
   return (
     <form {...formProps} className="flex flex-col gap-5" aria-label="Rule">
-      <RuleFields rule={rule} errors={state.errors} />
+      {/* A version that was saved becomes the new starting point. */}
+      <RuleFields key={rule.version} rule={rule} errors={state.errors} />
       <FormNote state={state} />
       <Button tone="lamp" type="submit" disabled={pending} className="self-start px-6">
         {pending ? 'Saving…' : 'Save as a new version'}

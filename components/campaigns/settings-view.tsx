@@ -43,7 +43,7 @@ export function SettingsView({
           </>
         }
       >
-        <RuleForm key={versions[0].version} rule={versions[0]} action={changeRule} />
+        <RuleForm rule={versions[0]} action={changeRule} />
       </FormSection>
       <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
         <RuleHistory versions={versions} />

@@ -1,4 +1,5 @@
 import type { Kysely } from 'kysely'
+import type { ParsedMail } from 'mailparser'
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { openMemoryDatabase } from '@/db/connection'
 import { findMail } from '@/db/queries/mail'
@@ -24,13 +25,18 @@ afterEach(async () => {
   await trap.close()
   await db.destroy()
 })
+const addressIn = (to: ParsedMail['to']) =>
+  [to]
+    .flat()
+    .map((one) => one?.text)
+    .join()
 const settings = () => ({ smtpUrl: trap.url, mailFrom: 'Ringside <ringside@saltmarsh.test>' })
 
 it('brings a message to the mail server whole, with its link and its accents', async () => {
   await deliverMail(db, await queueMail(db, MAIL), settings())
   expect(trap.mails).toHaveLength(1)
   const [mail] = trap.mails
-  expect(mail.to?.text).toBe(MAIL.recipient)
+  expect(addressIn(mail.to)).toBe(MAIL.recipient)
   expect(mail.from?.text).toContain('ringside@saltmarsh.test')
   expect(mail.subject).toBe(MAIL.subject)
   expect(mail.text?.trim()).toBe(MAIL.body)
@@ -75,7 +81,7 @@ it('fails so that the job tries again, says why, and sends it when the server ta
 it('does not let a line break in a subject become a header', async () => {
   const id = await queueMail(db, { ...MAIL, subject: 'Join\r\nBcc: egret@saltmarsh.test' })
   await deliverMail(db, id, settings())
-  expect(trap.mails[0].to?.text).toBe(MAIL.recipient)
+  expect(addressIn(trap.mails[0].to)).toBe(MAIL.recipient)
   expect(trap.mails[0].subject).toContain('Bcc')
 })
 

@@ -20,6 +20,8 @@ async function addGrade(candidateId: number, personId: number): Promise<void> {
       person_id: personId,
       occasion: 'first',
       grade: 'A',
+      tags: '[]',
+      reason: null,
       remark: null,
       recipe_id: null,
       view: null,
