@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listStandings, writeStates, type CandidateStanding, type StateWrite } from '@/db/queries/consensus'
+import { listStandings, writeStates, type CandidateStanding, type StateWrite } from '@/db/queries/states'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
 import type { CandidateState, StateCause } from '@/db/schema/intake'

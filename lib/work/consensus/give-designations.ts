@@ -1,5 +1,5 @@
 import type { Kysely } from 'kysely'
-import { insertDesignations, listTakenDesignations } from '@/db/queries/consensus'
+import { insertDesignations, listTakenDesignations } from '@/db/queries/states'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
 import { designation } from '@/lib/science/sky/designation'

@@ -3,14 +3,8 @@ import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { requireRule } from '@/db/queries/campaigns'
 import { requireCampaign } from '@/db/queries/candidates'
-import {
-  findNewestRun,
-  insertRun,
-  insertVerdicts,
-  listConfirmedToName,
-  newestInput,
-  type NewVerdict,
-} from '@/db/queries/consensus'
+import { findNewestRun, insertRun, insertVerdicts, newestInput, type NewVerdict } from '@/db/queries/consensus'
+import { listConfirmedToName } from '@/db/queries/states'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
 import type { Run, RunSummary } from '@/db/schema/consensus'
