@@ -12,7 +12,7 @@ export default defineConfig({
         test: {
           name: 'unit',
           environment: 'node',
-          include: ['{app,lib,db,migrations}/**/*.test.ts'],
+          include: ['{app,components,lib,db,migrations}/**/*.test.ts'],
           setupFiles: ['tests/_setup-node.ts'],
         },
       },

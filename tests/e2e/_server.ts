@@ -41,10 +41,14 @@ export async function makeDataFolder(): Promise<string> {
 export async function startTestServer(dataFolder: string): Promise<TestServer> {
   const port = await freePort()
   const url = `http://127.0.0.1:${port}`
-  const child = spawn(process.execPath, ['node_modules/next/dist/bin/next', 'start', '-H', '127.0.0.1', '-p', String(port)], {
-    stdio: ['ignore', 'pipe', 'pipe'],
-    env: { ...process.env, NODE_ENV: 'production', RINGSIDE_DATA: dataFolder, NEXTAUTH_URL: url, PORT: String(port) },
-  })
+  const child = spawn(
+    process.execPath,
+    ['node_modules/next/dist/bin/next', 'start', '-H', '127.0.0.1', '-p', String(port)],
+    {
+      stdio: ['ignore', 'pipe', 'pipe'],
+      env: { ...process.env, NODE_ENV: 'production', RINGSIDE_DATA: dataFolder, NEXTAUTH_URL: url, PORT: String(port) },
+    },
+  )
   let printed = ''
   child.stdout.on('data', (chunk: Buffer) => (printed += chunk.toString()))
   child.stderr.on('data', (chunk: Buffer) => (printed += chunk.toString()))

@@ -33,12 +33,15 @@ const NEEDS: Record<Capability, string> = {
 
 declare const proof: unique symbol
 
-export interface CampaignPermit<C extends Capability> {
-  readonly [proof]: Included[C]
+interface PermitWith<out Proofs> {
+  readonly [proof]: Proofs
   readonly viewer: Viewer
   readonly campaign: Campaign
   readonly role: Role
 }
+
+/** A permit to lead serves where one to grade or to read is asked for. */
+export type CampaignPermit<C extends Capability> = PermitWith<Included[C]>
 
 export interface SitePermit {
   readonly [proof]: { site: true }
