@@ -16,6 +16,7 @@ import { addGrade, gradeWeight, logOddsOf, probabilityOf } from '@/lib/science/a
 import {
   errorRateProblems,
   probabilityInterval,
+  reachedBoundary,
   waldBoundaries,
   type ErrorRates,
 } from '@/lib/science/agreement/sequential-test'
@@ -132,8 +133,9 @@ function judge(
   const { confirm, setAside } = probabilityInterval(boundaries, lensShare)
   const says = `the probability of a lens is ${probabilityBeside(probability, confirm, setAside)}`
   const [from, to] = [probabilityBeside(confirm, probability), probabilityBeside(setAside, probability)]
-  if (evidence >= boundaries.upper) return { outcome: 'confirmed', why: `Confirmed: ${says}, at or above ${from}.` }
-  if (evidence <= boundaries.lower) return { outcome: 'set aside', why: `Set aside: ${says}, at or below ${to}.` }
+  const reached = reachedBoundary(evidence, boundaries)
+  if (reached === 'confirm') return { outcome: 'confirmed', why: `Confirmed: ${says}, at or above ${from}.` }
+  if (reached === 'set aside') return { outcome: 'set aside', why: `Set aside: ${says}, at or below ${to}.` }
   const between = `${says}, between ${to} and ${from}`
   if (toCome > 0) return { outcome: 'open', why: `Open: ${between}; at most ${countOf(toCome, 'more look')} to come.` }
   return { outcome: 'split', why: `Split: ${between}, and all ${rule.mostLooks} looks are in.` }

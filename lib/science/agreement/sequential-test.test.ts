@@ -63,6 +63,15 @@ describe('sequentialOutcome', () => {
     expect(sequentialOutcome(2.9, 3, boundaries, limits)).toBe('another look')
   })
 
+  it('does not depend on the order in which the weights were summed', () => {
+    const sums = [0.1 + 0.2 + 0.3, 0.3 + 0.2 + 0.1]
+    expect(sums[0]).not.toBe(sums[1])
+    for (const upper of sums) {
+      const outcomes = sums.map((evidence) => sequentialOutcome(evidence, 3, { upper, lower: -1 }, limits))
+      expect(outcomes).toEqual(['confirm', 'confirm'])
+    }
+  })
+
   it('decides nothing before the least looks and asks for none after the most', () => {
     expect(sequentialOutcome(9, 1, boundaries, limits)).toBe('another look')
     expect(sequentialOutcome(2.9, 4, boundaries, limits)).toBe('undecided')

@@ -83,6 +83,15 @@ export function errorRatesFor(goal: { completeness: number; purity: number }, le
   return rates
 }
 
+/** Evidence this near to a boundary has reached it, so that the order in which weights were summed decides nothing. */
+const SUM_SLACK = 1e-9
+
+/** Which boundary the evidence has reached; null between them, and for NaN. */
+export function reachedBoundary(evidence: number, { upper, lower }: Boundaries): 'confirm' | 'set aside' | null {
+  if (evidence >= upper - SUM_SLACK) return 'confirm'
+  return evidence <= lower + SUM_SLACK ? 'set aside' : null
+}
+
 export interface LookLimits {
   /** looks below which nothing is decided; whole, 1 or more */
   leastLooks: number
@@ -99,9 +108,6 @@ export function sequentialOutcome(
   boundaries: Boundaries,
   { leastLooks, mostLooks }: LookLimits,
 ): SequentialOutcome {
-  if (looks >= leastLooks) {
-    if (evidence >= boundaries.upper) return 'confirm'
-    if (evidence <= boundaries.lower) return 'set aside'
-  }
-  return looks < mostLooks ? 'another look' : 'undecided'
+  const reached = looks >= leastLooks ? reachedBoundary(evidence, boundaries) : null
+  return reached ?? (looks < mostLooks ? 'another look' : 'undecided')
 }
