@@ -1,6 +1,7 @@
 /**
  * The reliability model against a plain numpy script that does the same work: the same grades, smoothing and tolerance, in
- * the same minute on the same machine. Then its cost from 50,000 to 5,000,000 grades, its memory, and one grade's update.
+ * the same minute on the same machine. Then its cost from 50,000 to 5,000,000 grades, its memory, one grade's update, and a
+ * moved threshold.
  */
 import { execFile } from 'node:child_process'
 import { existsSync } from 'node:fs'
@@ -11,6 +12,15 @@ import { fileURLToPath } from 'node:url'
 import { promisify } from 'node:util'
 import { decideByReliability, DEFAULT_RELIABILITY_RULE } from '@/lib/science/agreement/reliability-rule'
 import type { Answer } from '@/lib/science/agreement/grades'
+import {
+  changedOutcomes,
+  OUTCOMES,
+  outcomesByReliability,
+  type CandidateTallies,
+} from '@/lib/science/agreement/outcomes-at-once'
+import { probabilityOf } from '@/lib/science/agreement/posterior'
+import { promisedQuality } from '@/lib/science/agreement/rule-quality'
+import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import type { ReliabilityRun } from './_reliability-run'
 
 const run = promisify(execFile)
@@ -26,7 +36,7 @@ async function fitOf(grades: number, csv: string[] = []): Promise<ReliabilityRun
  * Python is `python3`, or what RINGSIDE_PYTHON names: it must have numpy.
  */
 export async function benchReliability(peers = process.env.RINGSIDE_PEERS): Promise<string[]> {
-  return [...(await compareWithPeer(peers)), ...(await costInGrades()), oneGrade()]
+  return [...(await compareWithPeer(peers)), ...(await costInGrades()), oneGrade(), whatIf()]
 }
 
 async function compareWithPeer(peers: string | undefined): Promise<string[]> {
@@ -77,6 +87,28 @@ function oneGrade(): string {
   for (let at = 0; at < times; at++) decideByReliability(DEFAULT_RELIABILITY_RULE, answers, 0.02)
   const microseconds = ((performance.now() - started) / times) * 1000
   return `reliability, one grade: verdict and reason of a candidate with ten grades in ${microseconds.toFixed(0)} µs`
+}
+
+/** A threshold moved: outcomes of 100,000 candidates with five grades each, what changed, and the quality promised. */
+function whatIf(): string {
+  const candidates = 100_000
+  const random = new SeededRandom(4)
+  const evidence = Float64Array.from({ length: candidates }, () => random.normal() * 4 - 4)
+  const five = new Uint16Array(candidates).fill(5)
+  const points = new Float64Array(candidates)
+  const tallies: CandidateTallies = { looks: five, grades: five, points, squaredPoints: points, evidence }
+  const probabilities = evidence.map(probabilityOf)
+  const before = outcomesByReliability(tallies, DEFAULT_RELIABILITY_RULE)
+  const confirmed = OUTCOMES.indexOf('confirmed')
+  const times = 20
+  const started = performance.now()
+  for (let at = 1; at <= times; at++) {
+    const after = outcomesByReliability(tallies, { ...DEFAULT_RELIABILITY_RULE, falseConfirmed: 0.001 * at })
+    changedOutcomes(before, after)
+    promisedQuality(probabilities, (candidate) => after[candidate] === confirmed)
+  }
+  const milliseconds = (performance.now() - started) / times
+  return `reliability, what if: 100,000 candidates under another threshold in ${milliseconds.toFixed(1)} ms`
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {

@@ -3,9 +3,9 @@
  *
  * In each round every open candidate gets one look. The graders come in a drawn order and take equal shares; each is given
  * the candidates on which a look of theirs most likely settles more than another's would. A share of looks goes to
- * calibration stamps. When the looks have grown by a tenth the reliability model is fitted again to all grades and the known truths, and every
- * candidate is weighed anew: one may open again. It ends when all are settled or have the most looks; those between the
- * boundaries then are confirmed where a lens is the likelier.
+ * calibration stamps. When the looks have grown by a tenth, the reliability model is fitted again to all grades and the
+ * known truths, and every candidate is weighed anew: one may open again. It ends when all are settled or have the most
+ * looks; those between the boundaries then are confirmed where a lens is the likelier.
  */
 import { fitDawidSkene, type DawidSkeneFit } from '@/lib/science/agreement/dawid-skene'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
