@@ -3,7 +3,7 @@ import { estimateNoise } from '@/lib/science/imaging/statistics'
 import { SeededRandom } from './seeded-random'
 import { sersicBrightness } from './sersic'
 import { sieImages } from './sie'
-import { simulateCandidate, SIMULATED_KINDS } from './simulate-candidate'
+import { simulateCandidate, simulateWithTruth, SIMULATED_KINDS } from './simulate-candidate'
 import { magnitudesOf } from './simulator/colours'
 import { arcDifficulty } from './simulator/difficulty'
 import { traced } from './simulator/lens-scenes'
@@ -164,5 +164,30 @@ describe('observing', () => {
     expect(difficulty(24, 17)).toBeGreaterThan(difficulty(24, 19))
     expect(difficulty(29, 17)).toBe(1)
     expect(difficulty(19, 22)).toBe(0)
+  })
+})
+
+describe('the truth of a simulated candidate', () => {
+  it('belongs to the very pixels of the candidate, and is what is left of them without noise', () => {
+    const { candidate, truth } = simulateWithTruth('lens-arc', 7)
+    expect(candidate).toEqual(simulateCandidate('lens-arc', 7))
+    truth.forEach(({ band, central, lensed, others }, k) => {
+      const { data } = candidate.bands[k]
+      const { skyNoise, electronsPerFlux } = SURVEY.bands[k]
+      expect(band).toBe(candidate.bands[k].band)
+      let squares = 0
+      for (let i = 0; i < data.length; i++) {
+        const light = central[i] + lensed[i] + others[i]
+        squares += (data[i] - light) ** 2 / (skyNoise ** 2 + Math.max(0, light) / electronsPerFlux)
+      }
+      // Mean of 6400 squares of a unit normal: 1 within 5 standard errors of (2 / 6400)^(1/2).
+      expect(Math.abs(squares / data.length - 1)).toBeLessThan(0.09)
+    })
+  })
+
+  it('has lensed light in lenses only', () => {
+    const most = (kind: 'lens-ring' | 'ring-galaxy') => Math.max(...simulateWithTruth(kind, 3).truth[0].lensed)
+    expect(most('lens-ring')).toBeGreaterThan(1)
+    expect(most('ring-galaxy')).toBe(0)
   })
 })

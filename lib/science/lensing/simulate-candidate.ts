@@ -15,7 +15,7 @@ import {
 } from './simulator/galaxy-scenes'
 import { SIMULATED_KINDS, type ImpostorKind, type SimulatedKind } from './simulator/kinds'
 import { composeLens } from './simulator/lens-scenes'
-import { addPoints, blurredScene, recordCutout } from './simulator/observe-scene'
+import { addPoints, blurredScene, cropCanvas, recordCutout } from './simulator/observe-scene'
 import { Scene } from './simulator/scene'
 import { SALTMARSH_WIDE_SURVEY, type SurveyModel } from './survey-model'
 
@@ -46,21 +46,61 @@ export function simulateCandidate(
   seed: number,
   survey: SurveyModel = SALTMARSH_WIDE_SURVEY,
 ): SimulatedCandidate {
+  return observe(kind, seed, survey).candidate
+}
+
+/** Light of one band without noise, rows as in the cutout, flux units of the survey. */
+export interface TrueLight {
+  band: string
+  /** Of the galaxy in the middle: the lens, or the first part of whatever else stands there. */
+  central: Float32Array
+  /** From behind the lens: arcs, rings, images; all 0 for what is not a lens. */
+  lensed: Float32Array
+  /** Of everything else: neighbours, members, field galaxies, stars, artefacts. */
+  others: Float32Array
+}
+
+/** The same candidate, pixel for pixel, with what it is made of. */
+export function simulateWithTruth(
+  kind: SimulatedKind,
+  seed: number,
+  survey: SurveyModel = SALTMARSH_WIDE_SURVEY,
+): { candidate: SimulatedCandidate; truth: TrueLight[] } {
+  const { candidate, scene, canvases } = observe(kind, seed, survey)
+  const truth = survey.bands.map(({ band }, index) => {
+    const central = cropCanvas(
+      scene,
+      blurredScene(scene, index, (layer) => layer === scene.layers[0]),
+    )
+    const lensed = cropCanvas(
+      scene,
+      blurredScene(scene, index, (layer) => layer.isLensed),
+    )
+    const others = cropCanvas(scene, canvases[index]).map((light, i) => light - central[i] - lensed[i])
+    return { band, central, lensed, others }
+  })
+  return { candidate, truth }
+}
+
+function observe(kind: SimulatedKind, seed: number, survey: SurveyModel) {
   const random = new SeededRandom(seed * SIMULATED_KINDS.length + SIMULATED_KINDS.indexOf(kind))
   const scene = new Scene(survey)
   const composed = compose(kind, scene, random)
   addFieldGalaxies(scene, kind === 'lens-group' ? 2 : 3.2, random)
+  const canvases: Float64Array[] = []
   const bands = survey.bands.map((band, index) => {
     const canvas = blurredScene(scene, index, () => true)
     addPoints(canvas, scene, index)
     composed.artefact?.(canvas, index)
+    canvases.push(canvas)
     return { band: band.band, data: recordCutout(canvas, scene, band, random) }
   })
   const { width, height, pixelScaleArcsec } = survey
   const { einsteinRadiusArcsec } = composed
   const isLens = einsteinRadiusArcsec !== null
   const difficulty = isLens ? arcDifficulty(scene) : impostorDifficulty(kind as ImpostorKind, random)
-  return { kind, isLens, bands, width, height, pixelScaleArcsec, einsteinRadiusArcsec, difficulty }
+  const candidate = { kind, isLens, bands, width, height, pixelScaleArcsec, einsteinRadiusArcsec, difficulty }
+  return { candidate, scene, canvases }
 }
 
 interface Composed {

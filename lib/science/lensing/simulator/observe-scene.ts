@@ -43,6 +43,15 @@ export function addPoints(canvas: Float64Array, scene: Scene, bandIndex: number)
   }
 }
 
+/** The cutout's part of a canvas, without noise. */
+export function cropCanvas(scene: Scene, canvas: Float64Array): Float32Array {
+  const { width, height } = scene.survey
+  return Float32Array.from({ length: width * height }, (_, i) => {
+    const row = Math.floor(i / width) + MARGIN
+    return canvas[row * scene.width + (i % width) + MARGIN]
+  })
+}
+
 /** The cutout of a canvas with Poisson noise of the light and normal noise of the sky, sky subtracted. */
 export function recordCutout(
   canvas: Float64Array,
