@@ -7,6 +7,8 @@ export interface BandPlane {
   height: number
   /** Row by row; row 0 is the bottom row, as in FITS. */
   data: Float32Array
+  /** Where known, bands of different scales are brought to one grid before they are combined. */
+  pixelScaleArcsec?: number | null
 }
 
 export interface NormalisedPlane {

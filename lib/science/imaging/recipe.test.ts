@@ -2,19 +2,22 @@ import { describe, expect, it } from 'vitest'
 import { bandOfView, canonicalRecipe, defaultRecipe, viewsOf } from './recipe'
 
 describe('a recipe', () => {
-  it('wants colour, deep and each band in the order of the bands', () => {
+  it('wants the views of all bands first, then each band in the order of the bands', () => {
     const recipe = defaultRecipe(['g', 'r', 'i'])
     expect(viewsOf(recipe, ['g', 'r', 'i'])).toEqual([
       { key: 'colour', label: 'Colour' },
       { key: 'deep', label: 'Deep' },
+      { key: 'residual', label: 'Lens removed' },
+      { key: 'blue', label: 'Blue only' },
+      { key: 'core', label: 'Bright core' },
       { key: 'band:g', label: 'g' },
       { key: 'band:r', label: 'r' },
       { key: 'band:i', label: 'i' },
     ])
   })
 
-  it('has no colour view for one band', () => {
-    expect(viewsOf(defaultRecipe(['VIS']), ['VIS']).map((view) => view.key)).toEqual(['deep', 'band:VIS'])
+  it('has no view of colours for one band', () => {
+    expect(viewsOf(defaultRecipe(['VIS']), ['VIS']).map((view) => view.key)).toEqual(['deep', 'residual', 'band:VIS'])
   })
 
   it('names no view of a band that is not there, and no view it does not know', () => {

@@ -33,6 +33,12 @@ export interface Recipe {
   colour: ColourLimits
   deep: DeepLimits
   band: LimitsSigma
+  /** Parts added since version 1 first shipped: a stored recipe without them gets those of `extraLimits`. */
+  residual?: ColourLimits
+  blue?: DeepLimits
+  core?: ColourLimits
+  /** Side of the close field of view, arcsec, beside the whole cutout; 12 where none is given. */
+  closeFieldArcsec?: number
   /** Factor on a band's noise-normalised brightness in the colour view, by band; 1 where none is given. */
   weights?: Record<string, number>
 }
@@ -51,11 +57,58 @@ export function bandOfView(key: string): string | null {
   return key.startsWith(BAND_PREFIX) ? key.slice(BAND_PREFIX.length) : null
 }
 
-/** Colour, deep and each band, with limits chosen by eye on simulated and real cutouts (common practice, no source). */
+export const CLOSE_FIELD_ARCSEC = 12
+
+/** Limits of the views that a stored recipe may not know, its own where it has them. */
+export function extraLimits(recipe: Recipe): { residual: ColourLimits; blue: DeepLimits; core: ColourLimits } {
+  return {
+    residual: recipe.residual ?? {
+      blackSigma: -1.2,
+      softeningSigma: 5,
+      whitePercentile: 99.7,
+      leastWhiteSigma: 25,
+      mostWhiteSigma: 120,
+      hueFromSigma: 0.8,
+      saturation: 1,
+    },
+    blue: recipe.blue ?? {
+      blackSigma: -1,
+      softeningSigma: 4,
+      whitePercentile: 99.7,
+      leastWhiteSigma: 25,
+      mostWhiteSigma: 150,
+      smooth: true,
+    },
+    core: recipe.core ?? {
+      blackSigma: 0,
+      softeningSigma: 25,
+      whitePercentile: 99.97,
+      leastWhiteSigma: 50,
+      mostWhiteSigma: 30000,
+      hueFromSigma: 2,
+      saturation: 1.1,
+    },
+  }
+}
+
+/** Side of the close field of view of a recipe, arcsec. */
+export const closeFieldOf = (recipe: Recipe): number => recipe.closeFieldArcsec ?? CLOSE_FIELD_ARCSEC
+
+/** Views made of several bands, in the order of the default recipe: key, label, bands needed. */
+const COMBINED_VIEWS: readonly (ViewName & { bands: number })[] = [
+  { key: 'colour', label: 'Colour', bands: 2 },
+  { key: 'deep', label: 'Deep', bands: 1 },
+  { key: 'residual', label: 'Lens removed', bands: 1 },
+  { key: 'blue', label: 'Blue only', bands: 2 },
+  { key: 'core', label: 'Bright core', bands: 2 },
+]
+
+/** Colour, deep, lens removed, blue only, bright core and each band, with limits chosen by eye on simulated and real cutouts (common practice, no source). */
 export function defaultRecipe(bands: string[]): Recipe {
+  const combined = COMBINED_VIEWS.filter((view) => bands.length >= view.bands).map((view) => view.key)
   return {
     version: 1,
-    views: [...(bands.length > 1 ? ['colour'] : []), 'deep', ...bands.map(bandViewKey)],
+    views: [...(bands.length > 0 ? combined : ['deep']), ...bands.map(bandViewKey)],
     colour: {
       blackSigma: -1,
       softeningSigma: 6,
@@ -87,15 +140,15 @@ export function canonicalRecipe(recipe: Recipe): string {
 }
 
 /**
- * The views of a recipe that exist for these bands, in order, with the label shown to people. A colour view needs two
+ * The views of a recipe that exist for these bands, in order, with the label shown to people. Views of colour need two
  * bands; a band view needs its band; unknown keys are left out.
  */
 export function viewsOf(recipe: Recipe, bands: string[]): ViewName[] {
   const views: ViewName[] = []
   for (const key of recipe.views) {
     const band = bandOfView(key)
-    if (key === 'colour' && bands.length > 1) views.push({ key, label: 'Colour' })
-    else if (key === 'deep' && bands.length > 0) views.push({ key, label: 'Deep' })
+    const combined = COMBINED_VIEWS.find((view) => view.key === key)
+    if (combined && bands.length >= combined.bands) views.push({ key, label: combined.label })
     else if (band !== null && bands.includes(band)) views.push({ key, label: band })
   }
   return views

@@ -5,15 +5,18 @@
 import { channelWeights, colourBalance, mixPlanes } from './colour-channels'
 import { luptonFromLimits, luptonRgb } from './lupton'
 import type { NormalisedPlane } from './normalise-planes'
-import type { Recipe } from './recipe'
+import type { ColourLimits, Recipe } from './recipe'
 import { MISSING_GREY } from './render-grey'
 import { smoothBinomial } from './smooth'
 import { whiteLevel } from './white-level'
 
 /** RGB interleaved, row 0 = top, from at least two usable planes of one size, shortest wavelength first. */
-export function renderColour(planes: NormalisedPlane[], recipe: Recipe): Uint8Array {
+export function renderColour(
+  planes: NormalisedPlane[],
+  recipe: Recipe,
+  limits: ColourLimits = recipe.colour,
+): Uint8Array {
   const { width, height } = planes[0]
-  const limits = recipe.colour
   const balance = colourBalance(planes.map((plane) => plane.sigma))
   const bandWeights = planes.map((plane, k) => (recipe.weights?.[plane.band] ?? 1) * balance[k])
   const [red, green, blue] = channelWeights(planes.length).map((shares) =>
@@ -23,7 +26,7 @@ export function renderColour(planes: NormalisedPlane[], recipe: Recipe): Uint8Ar
     ),
   ) as [Float32Array, Float32Array, Float32Array]
   const missing = missingPixels(red, green, blue)
-  const [r, g, b, intensity] = calmHues(red, green, blue, width, height, recipe)
+  const [r, g, b, intensity] = calmHues(red, green, blue, width, height, limits)
   const white = whiteLevel(intensity, limits) - limits.blackSigma
   const { stretch, Q } = luptonFromLimits(white, limits.softeningSigma)
   const upward = luptonRgb(r, g, b, { minimum: limits.blackSigma, stretch, Q })
@@ -49,7 +52,7 @@ function calmHues(
   blue: Float32Array,
   width: number,
   height: number,
-  { colour: { hueFromSigma, saturation } }: Recipe,
+  { hueFromSigma, saturation }: ColourLimits,
 ): Channels {
   const size = red.length
   const intensity = new Float32Array(size)

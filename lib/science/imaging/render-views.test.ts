@@ -50,6 +50,9 @@ describe('the views of a candidate', () => {
     expect(views.map((view) => [view.key, view.channels, view.pixels.length, view.note])).toEqual([
       ['colour', 3, 19200, null],
       ['deep', 1, 6400, null],
+      ['residual', 3, 19200, null],
+      ['blue', 1, 6400, null],
+      ['core', 3, 19200, null],
       ['band:g', 1, 6400, null],
       ['band:r', 1, 6400, null],
       ['band:i', 1, 6400, null],
@@ -238,7 +241,7 @@ describe('what is missing or odd', () => {
 
   it('names a band that the recipe wants and that did not come', () => {
     const views = renderViews([blob('g', 50), blob('i', 50)], recipe)
-    expect(views.map((view) => view.key)).toEqual(['colour', 'deep', 'band:g', 'band:i'])
+    expect(views.map((view) => view.key)).toEqual(['colour', 'deep', 'residual', 'blue', 'core', 'band:g', 'band:i'])
     expect(find(views, 'colour').note).toBe('Colours from g and i only: band r is missing.')
     expect(find(views, 'deep').note).toBe('Made of g, i only: band r is missing.')
   })
@@ -247,6 +250,7 @@ describe('what is missing or odd', () => {
     const views = renderViews([blob('g', 50), blob('r', 50, 10, 10, 32)], defaultRecipe(['g', 'r']))
     expect(views.map((view) => [view.key, view.width])).toEqual([
       ['deep', 40],
+      ['residual', 40],
       ['band:g', 40],
       ['band:r', 32],
     ])

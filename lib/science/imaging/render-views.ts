@@ -2,26 +2,19 @@
  * All views of a candidate from its band planes. What cannot be shown rightly is not shown: a view is left out or drawn
  * flat, and a note says why.
  */
+import { blueView, coreView, residualView } from './arc-views'
+import { matchScales } from './match-scales'
 import { normalisePlane, type BandPlane, type NormalisedPlane } from './normalise-planes'
 import { bandOfView, type Recipe } from './recipe'
 import { renderColour } from './render-colour'
 import { renderDeep } from './render-deep'
 import { MISSING_GREY, renderGrey } from './render-grey'
-import { bandNote, colourNote, deepNote, noColourNote, sizesNote } from './view-notes'
+import { arcNote, bandNote, colourNote, deepNote, noColourNote, sizesNote } from './view-notes'
+
+import type { RenderedView } from './rendered-view'
 
 export type { BandPlane } from './normalise-planes'
-
-export interface RenderedView {
-  /** As in the recipe: 'colour', 'deep', 'band:g', ... */
-  key: string
-  width: number
-  height: number
-  channels: 1 | 3
-  /** Row 0 is the top row; RGB interleaved when channels is 3. */
-  pixels: Uint8Array
-  /** What a viewer must know about this picture, in a sentence; null when nothing. */
-  note: string | null
-}
+export type { RenderedView } from './rendered-view'
 
 /**
  * The recipe's views that these planes allow, in the recipe's order.
@@ -30,28 +23,58 @@ export interface RenderedView {
  * @returns an empty list for no planes. Never throws when each plane has width x height pixels, at least one.
  */
 export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[] {
-  const all = planes.map(normalisePlane)
+  const native = planes.map(normalisePlane)
+  const matched = matchScales(planes)
+  const all = matched.planes.map((plane, k) => (plane === planes[k] ? native[k] : normalisePlane(plane)))
   const wanted = recipe.views.flatMap((key) => bandOfView(key) ?? [])
   const absent = wanted.filter((band) => !all.some((plane) => plane.band === band))
   const group = largestGroup(all)
   const left = all.filter((plane) => !group.includes(plane))
   const noColour = recipe.views.includes('colour') ? noColourNote(group, all, absent) : null
+  const scene: Scene = { group, left, absent, recipe, matchNote: matched.note }
   const views: RenderedView[] = []
   for (const key of recipe.views) {
     const band = bandOfView(key)
     const view =
-      key === 'colour'
-        ? noColour === null
-          ? colourView(group, left, absent, recipe)
-          : null
-        : key === 'deep'
-          ? deepView(group, left, absent, recipe)
-          : bandView(all.find((plane) => plane.band === band) ?? null, recipe)
+      band !== null
+        ? bandView(native.find((plane) => plane.band === band) ?? null, recipe)
+        : combinedView(key, scene, noColour !== null)
     if (view) views.push(view)
   }
   const first = views.find((view) => view.key === 'deep') ?? views[0]
   if (noColour !== null && first) first.note = [noColour, first.note].filter(Boolean).join(' ')
   return views
+}
+
+/** What the combined views are made of. */
+interface Scene {
+  group: NormalisedPlane[]
+  left: NormalisedPlane[]
+  absent: string[]
+  recipe: Recipe
+  matchNote: string | null
+}
+
+function combinedView(key: string, scene: Scene, noColour: boolean): RenderedView | null {
+  const { group, left, absent, recipe, matchNote } = scene
+  const usable = group.filter((plane) => plane.state === 'usable')
+  const view =
+    key === 'colour'
+      ? noColour
+        ? null
+        : colourView(group, left, absent, recipe)
+      : key === 'deep'
+        ? deepView(group, left, absent, recipe)
+        : key === 'residual'
+          ? residualView(usable, recipe)
+          : key === 'blue'
+            ? blueView(usable, recipe)
+            : key === 'core'
+              ? coreView(usable, recipe)
+              : null
+  if (view === null) return null
+  const bands = key === 'colour' || key === 'deep' ? [] : [sizesNote(left), arcNote(usable, group, absent)]
+  return { ...view, note: [matchNote, ...bands, view.note].filter(Boolean).join(' ') || null }
 }
 
 function colourView(

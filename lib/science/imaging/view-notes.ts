@@ -39,6 +39,15 @@ export function deepNote(usable: NormalisedPlane[], group: NormalisedPlane[], ab
   return parts.join(' ') || null
 }
 
+/** For the views made of all bands pixel by pixel: lens removed, blue only, bright core. */
+export function arcNote(usable: NormalisedPlane[], group: NormalisedPlane[], absent: string[]): string | null {
+  const faults = [...absent.map((band) => `band ${band} is missing`), ...group.flatMap(fault)]
+  const from = `Made of ${usable.map((plane) => plane.band).join(', ')} only`
+  return (
+    [...(faults.length > 0 ? [`${from}: ${faults.join('; ')}.`] : []), ...missingPixelsNote(usable)].join(' ') || null
+  )
+}
+
 export function bandNote(plane: NormalisedPlane): string | null {
   if (plane.state === 'empty') return `Band ${plane.band} has no data in this cutout, drawn as flat grey.`
   if (plane.state === 'constant') {
