@@ -162,7 +162,6 @@ describe('the main path', () => {
     await expect.poll(() => lead.getByRole('heading', { level: 1 }).textContent(), { timeout: 20_000 }).toBe('2 splits')
     await expectAccessible(lead)
     await lead.keyboard.press('b')
-    await lead.keyboard.press('r')
     await lead.keyboard.press('Control+Enter')
     await expect.poll(() => lead.getByText('Give a reason').count()).toBeGreaterThan(0)
     await lead.keyboard.type('The counter-image is where it should be.')
