@@ -98,7 +98,9 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
     <div className="flex min-h-0 flex-1 flex-col gap-2">
       <div className="flex flex-wrap items-center gap-x-3 gap-y-2">
         <p role="status" className="mr-auto text-small text-mute first-letter:uppercase">
-          {filterCount > 0 ? `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun}, ` : ''}
+          {filterCount > 0 && !isPending
+            ? `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun}, `
+            : ''}
           {describeOrder(columns, state.sort)}
           {isPending ? ' · reading…' : ''}
         </p>

@@ -9,7 +9,11 @@ const GAP = 12
 /** The middle of a stamp as high as a row; the whole of it, large, beside the pointer while that rests there. */
 export function StampThumbnail({ src, name }: { src: string | null; name: string }) {
   const [place, setPlace] = useState<{ left: number; top: number } | null>(null)
-  if (!src) return <span className="block size-7 rounded-key bg-tray" title="No picture yet" />
+  const [broken, setBroken] = useState(false)
+  if (!src || broken) {
+    const why = broken ? 'The picture could not be loaded' : 'No picture yet'
+    return <span className="block size-7 shrink-0 bg-tray" title={why} />
+  }
   const show = (box: DOMRect) =>
     setPlace({
       left: Math.min(box.right + GAP, window.innerWidth - SIDE - GAP),
@@ -28,6 +32,7 @@ export function StampThumbnail({ src, name }: { src: string | null; name: string
         height={28}
         loading="lazy"
         decoding="async"
+        onError={() => setBroken(true)}
         className="size-7 scale-160 object-contain"
       />
       {place
