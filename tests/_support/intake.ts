@@ -1,6 +1,8 @@
 import { mkdtempSync, rmSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
+import { insertRecipe } from '@/db/queries/campaigns'
+import { bandViewKey, canonicalRecipe, defaultRecipe } from '@/lib/science/imaging/recipe'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { BlobStore } from '@/lib/platform/storage/blob-store'
 import { receiveFile, type ReceivedFile } from '@/lib/work/intake/receive-file'
@@ -39,6 +41,17 @@ export async function makeIntake(): Promise<IntakeScenario> {
     quietMs: 0,
   }
   const permit = await scenario.permit(scenario.lead, 'lead')
+  // Views of this test's own: what the default recipe shows may change.
+  const bands = ['g', 'r', 'i']
+  const recipe = { ...defaultRecipe(bands), views: ['colour', 'deep', ...bands.map(bandViewKey)] }
+  await insertRecipe(db, {
+    campaignId: campaign.id,
+    version: 2,
+    parameters: canonicalRecipe(recipe),
+    hash: 'of tests',
+    createdBy: scenario.lead.id,
+    now: campaign.created_at,
+  })
   const files = () => db.selectFrom('file').selectAll().where('campaign_id', '=', campaign.id).orderBy('id').execute()
   return {
     ...scenario,

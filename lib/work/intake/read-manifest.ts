@@ -1,17 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { listCandidateNames, listFilesOfCandidates, upsertCandidates } from '@/db/queries/cutouts'
+import { setFileFates, type WaitingFile } from '@/db/queries/intake'
 import {
   deleteManifestRows,
   insertManifestRows,
-  listCandidateNames,
-  listFilesOfCandidates,
   listManifestRows,
   listManifestRowsOfBases,
   listManifestRowsOfCandidates,
-  setFileFates,
-  upsertCandidates,
-  type WaitingFile,
-} from '@/db/queries/intake'
+} from '@/db/queries/manifests'
 import type { DB } from '@/db/schema'
 import type { ManifestRow } from '@/db/schema/intake'
 import { isoTime } from '@/lib/platform/clock'

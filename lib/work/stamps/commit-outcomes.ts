@@ -1,15 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import {
-  deletePlanesOfReplaced,
-  listStillWaiting,
-  releaseDuplicates,
-  setFileFates,
-  upsertCandidates,
-  upsertPlanes,
-  type CandidateFacts,
-  type FileFateUpdate,
-} from '@/db/queries/intake'
+import { deletePlanesOfReplaced, upsertCandidates, upsertPlanes, type CandidateFacts } from '@/db/queries/cutouts'
+import { listStillWaiting, releaseDuplicates, setFileFates, type FileFateUpdate } from '@/db/queries/intake'
 import { clearImaged, replaceStamps, setFilesImaged } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'

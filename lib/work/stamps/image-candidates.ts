@@ -1,5 +1,5 @@
 import 'server-only'
-import { listHeldPlanes } from '@/db/queries/intake'
+import { listHeldPlanes } from '@/db/queries/cutouts'
 import { listCandidatesById, listCandidatesToImage } from '@/db/queries/stamps'
 import { groupBy } from '@/lib/work/intake/read-manifest'
 import { campaignWork, type ImagingTools } from './campaign-work'

@@ -1,12 +1,7 @@
 import 'server-only'
-import {
-  hasManifestRows,
-  listHeldPlanes,
-  listManifestRowsOfBases,
-  releaseDuplicates,
-  setFileFates,
-  type WaitingFile,
-} from '@/db/queries/intake'
+import { listHeldPlanes } from '@/db/queries/cutouts'
+import { releaseDuplicates, setFileFates, type WaitingFile } from '@/db/queries/intake'
+import { hasManifestRows, listManifestRowsOfBases } from '@/db/queries/manifests'
 import { isoTime } from '@/lib/platform/clock'
 import { baseName } from '@/lib/work/intake/file-name'
 import { matchName, type NameMatch } from '@/lib/work/intake/match-name'

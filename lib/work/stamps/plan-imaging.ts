@@ -1,10 +1,6 @@
 import 'server-only'
-import {
-  listHeldPlanes,
-  listManifestRowsOfBases,
-  listManifestRowsOfCandidates,
-  type HeldPlaneRow,
-} from '@/db/queries/intake'
+import { listHeldPlanes, type HeldPlaneRow } from '@/db/queries/cutouts'
+import { listManifestRowsOfBases, listManifestRowsOfCandidates } from '@/db/queries/manifests'
 import type { ManifestRow } from '@/db/schema/intake'
 import { baseName } from '@/lib/work/intake/file-name'
 import { manifestFacts } from '@/lib/work/intake/manifest-facts'
