@@ -17,12 +17,13 @@ interface Typed {
 /**
  * null is an empty cell, `nullValue` in an integer column that has one, '?' in a boolean one. Floating numbers are the
  * shortest text that reads back as the same double, with NaN, +Inf and -Inf. 'char' takes ASCII only, 'unicodeChar' anything.
- * @param where the place for messages, such as 'row 12'.
+ * @param where the place for messages: the number of a row, or words.
  * @throws RangeError when the value does not fit the datatype.
  */
-export function cellText(column: Typed, value: CellValue, where: string): string {
+export function cellText(column: Typed, value: CellValue, where: number | string): string {
   const refuse = (why: string): never => {
-    throw new RangeError(`Column ${column.name}, ${where}: ${why}.`)
+    const place = typeof where === 'number' ? `row ${where}` : where
+    throw new RangeError(`Column ${column.name}, ${place}: ${why}.`)
   }
   const { datatype } = column
   if (value === null) {
