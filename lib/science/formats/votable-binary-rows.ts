@@ -1,6 +1,6 @@
 /**
- * Rows of the BINARY and BINARY2 serialisations, as their bytes come in. Source: VOTable 1.4 sections 5.3 and 5.4, sizes in
- * section 2.1; most significant byte first.
+ * Rows of the BINARY and BINARY2 serialisations, as their bytes come in. Source: VOTable 1.4 sections 2.1
+ * (sizes), 5 and 6; most significant byte first.
  */
 import type { ColumnStore, VotableField } from '@/lib/science/formats/votable-fields'
 

@@ -1,6 +1,6 @@
 /**
  * A table as VOTable 1.4 in BINARY2, streamed: about half the size of TABLEDATA for numbers, and nothing to parse.
- * Source: VOTable 1.4 sections 5.4 (BINARY2), 2.1 (sizes of the datatypes, most significant byte first) and 5.1 (STREAM).
+ * Source: VOTable 1.4 sections 2.1 (sizes of the datatypes), 5 (BINARY2, STREAM) and 6; most significant byte first.
  *
  * Each row begins with one bit a column, most significant first, set where the value is missing. Text has its length before it;
  * unicodeChar is UTF-16, two bytes a unit. Memory does not grow with the number of rows.

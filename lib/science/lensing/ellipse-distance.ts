@@ -5,7 +5,7 @@ import type { SkyVector } from './sis'
 /**
  * Distance from the nearest point of the ellipse, negative inside.
  * In the quadrant of the point the foot is (a^2 u / (t + a^2), b^2 v / (t + b^2)) with t the root of a falling convex function,
- * found between bounds: D. Eberly, "Distance from a Point to an Ellipse" (Geometric Tools, 2013), section 2.
+ * found between bounds: D. Eberly, "Distance from a Point to an Ellipse" (Geometric Tools, 2013).
  */
 export function signedDistance(
   { centre, semiMajor: a, semiMinor: b, positionAngleDeg }: PlainEllipse,

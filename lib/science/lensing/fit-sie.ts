@@ -7,7 +7,7 @@
  * With fewer numbers than unknowns nothing is determined and the fit is refused; with as many, the model passes through the
  * clicks by construction and its residual says nothing about the lens, which the answer says.
  * The start and the first rounds compare in the source plane, each offset carried to the sky by the magnification matrix:
- * C. Keeton, arXiv:astro-ph/0102340, section 4.
+ * C. Keeton, arXiv:astro-ph/0102340 (from memory).
  */
 import { leastSquares, type LeastSquaresFit } from './least-squares'
 import { arcResiduals, imageResiduals, linearResiduals, pairImages } from './fit-sie-residuals'
@@ -182,7 +182,7 @@ function notesOn({ request, degreesOfFreedom, chiSquared, images, lens, covarian
   }
   if (covariance === null) notes.push('The points leave some parameter free: their uncertainties are not given.')
   if (!converged) notes.push('The search ended before it settled; move the lens or the points and fit again.')
-  // Three times the expectation is a probability below 0.3 % at any number of degrees of freedom above 3.
+  // A model that fits exceeds this in 0.3 % of cases with one degree of freedom (9), and in fewer with more.
   if (degreesOfFreedom > 0 && chiSquared > 3 * degreesOfFreedom + 6) {
     notes.push('The points lie further from the model than clicks do: this lens, with this centre, does not make them.')
   }

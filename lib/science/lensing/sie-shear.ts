@@ -5,7 +5,7 @@
  * Positions are offsets on the sky in arcsec, `east` and `north`; on a stamp with north up, east is to the LEFT. Position angles
  * run from north through east. Shear of strength g and angle p has the potential (g/2) r^2 cos 2(t - p), with t the position
  * angle of the place seen from the lens: it stretches images ALONG p, so that the mass that causes it lies at right angles to p.
- * (C. Keeton, arXiv:astro-ph/0102341, section 3.4, has the form; signs and angles differ between codes.)
+ * (C. Keeton, arXiv:astro-ph/0102341, has the form; signs and angles differ between codes.)
  *
  * With x from the lens, M = 1 - shear matrix and a the ellipsoid's deflection, which depends on direction only, the lens equation
  * is  M x - a(t) = y.  The ellipsoid's potential is x.a, and its second derivatives are 2 kappa across x and 0 along it, so

@@ -3,7 +3,7 @@
  *   t(x) = (1 + z_l) / c  D_l D_s / D_ls  ( |x - y|^2 / 2 - psi(x) )
  * Images stand at its minima and saddle points; only differences can be observed. For the singular isothermal sphere two images
  * at x1 and x2 differ by (1 + z_l) D_l D_s / (c D_ls) (x1^2 - x2^2) / 2.
- * Source: R. Blandford & R. Narayan, ApJ 310, 568 (1986); R. Narayan & M. Bartelmann, arXiv:astro-ph/9606001, section 3.4.
+ * Source: R. Blandford & R. Narayan, ApJ 310, 568 (1986); R. Narayan & M. Bartelmann, arXiv:astro-ph/9606001.
  */
 import { PARSEC_M, RADIANS_PER_ARCSEC, SPEED_OF_LIGHT_KM_S } from './constants'
 import { angularDiameterDistanceBetweenMpc, angularDiameterDistanceMpc, type Cosmology } from './cosmology'
