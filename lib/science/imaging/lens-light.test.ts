@@ -132,7 +132,8 @@ describe('light from behind the lens', () => {
     const { model } = subtractLensLight(planes)
     for (const [k, band] of ['g', 'r', 'i'].entries()) {
       const share = kept(model?.light[band] ?? new Float32Array(6400), truth[k], lensed[k], SURVEY.bands[k].skyNoise)
-      expect(share).toBeGreaterThan(0.7)
+      // In g the galaxy is faint and the ring bright; in i the other way round.
+      expect(share).toBeGreaterThan(band === 'g' ? 0.9 : 0.55)
       expect(share).toBeLessThan(1.15)
     }
   })

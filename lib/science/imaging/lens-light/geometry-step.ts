@@ -13,8 +13,8 @@ export interface GeometryPrior {
   outerEllipticity: number
 }
 
-/** What stands further above the model than this share of its light is not an error of its shape. */
-const SHAPE_REACH = 0
+/** Within this radius, pixels, all light is the galaxy's. */
+const CORE_REACH = 4
 
 /**
  * @param shapeDoubt share of the light by which even the right ellipses miss it.
@@ -45,15 +45,16 @@ export function improveGeometry(
       const i = row * width + column
       if (excluded[i] === MISSING || (excluded[i] === FOREIGN && foreign === null)) continue
       const m = radiusDerivatives(geometry, column, row, slopes)
-      if (m > reach) continue
+      if (m > reach || (m > CORE_REACH && excluded[i] === ABOVE)) continue
+      // The core alone says where the centre is: outside, neighbours would pull at it.
+      if (m > CORE_REACH) slopes[0] = slopes[1] = 0
       const light = profile.at(m)
       const slope = profile.slopeAt(m)
       const taken = excluded[i] === FOREIGN && foreign !== null ? profile.foreignShare * foreign.values[i] : 0
       const residual = values[i] - light - profile.pedestal - taken
-      if (excluded[i] === ABOVE && residual > SHAPE_REACH * light) continue
       const variance = 1 + (shapeDoubt * light) ** 2 + (0.3 * taken) ** 2
       const excess = residual / Math.sqrt(variance)
-      // Light that is not the galaxy's only adds: what stands above the model loses its say, what lies below does not.
+      // Huber's weights.
       const trust = Math.abs(excess) > 1.5 ? 1.5 / Math.abs(excess) : 1
       const weight = trust / variance
       const pull = weight * residual * slope
