@@ -1,0 +1,31 @@
+// npm run bench: speed as ratios in one run, against scripts of fixtures/peers and against floors. Never part of the check.
+// A word after it chooses: npm run bench -- imaging
+import { availableParallelism, totalmem } from 'node:os'
+import { closeImagePool } from '@/lib/work/stamps/image-pool'
+import { benchImaging } from './bench-imaging'
+import { benchLensLight } from './bench-lens-light'
+import { benchMatch } from './bench-match'
+import { benchReliability } from './bench-reliability'
+
+const BENCHES: Record<string, () => Promise<string[]>> = {
+  imaging: benchImaging,
+  'lens-light': () => benchLensLight(),
+  match: benchMatch,
+  reliability: () => benchReliability(),
+}
+
+process.env.RINGSIDE_PEERS ??= 'fixtures/peers'
+process.env.RINGSIDE_PYTHON ??= '/usr/bin/python3'
+
+const wanted = process.argv.slice(2)
+const unknown = wanted.filter((name) => !(name in BENCHES))
+if (unknown.length) {
+  console.error(`No benchmark is called ${unknown.join(', ')}; there are: ${Object.keys(BENCHES).join(', ')}.`)
+  process.exit(2)
+}
+console.log(`${availableParallelism()} processors, ${Math.round(totalmem() / 2 ** 30)} GiB, Node ${process.version}\n`)
+for (const [name, bench] of Object.entries(BENCHES)) {
+  if (wanted.length && !wanted.includes(name)) continue
+  console.log((await bench()).join('\n') + '\n')
+}
+await closeImagePool()
