@@ -124,6 +124,12 @@ export function parametersOf(
     const value = angleOf(lensOf(kind, parameters, held))
     const angle: FittedParameter = { name: '', unit: 'deg', value, uncertainty: errorOf(angleOf, 180) }
     if (covariance === null) return [size, angle]
+    // Neither an axis ratio nor shear can be off by more than 1: such an error says that nothing is known.
+    if ((size.uncertainty ?? 0) > 1)
+      return [
+        { ...size, uncertainty: null },
+        { ...angle, uncertainty: null },
+      ]
     const componentError = Math.sqrt((covariance[first][first] + covariance[first + 1][first + 1]) / 2)
     // Within its own error of 0 a size has no slope to carry the error by, and no direction.
     if (Math.hypot(parameters[first], parameters[first + 1]) > componentError) return [size, angle]

@@ -212,6 +212,12 @@ describe('a lens fitted to points along an arc', () => {
     expect(fit.notes.join(' ')).toContain('a small residual is no evidence')
   })
 
+  it('says when a short arc does not fix an ellipse, and gives no error where nothing is known', () => {
+    const fit = fitSie({ ...plain, points: arc(0, 50, 8), pointsAre: 'arc', kind: 'ellipsoid', clickErrorArcsec: 0.2 })
+    expect(fit.notes.join(' ')).toContain('the radius is uncertain by more than 30 %')
+    expect(byName(fit, 'axis ratio').uncertainty).toBeNull()
+  })
+
   it('is less sure of the radius the shorter the arc', () => {
     const error = (to: number) =>
       byName(fitSie({ ...plain, points: arc(0, to, 12), pointsAre: 'arc', kind: 'sphere' }), 'Einstein radius')

@@ -180,6 +180,12 @@ function notesOn({ request, degreesOfFreedom, chiSquared, images, lens, covarian
       'As many unknowns as numbers: the model passes through the points by construction, so a small residual is no evidence.',
     )
   }
+  // The logarithm of the radius is the first unknown: its error is the radius's part.
+  if (covariance !== null && Math.sqrt(covariance[0][0]) > 0.3) {
+    notes.push(
+      'The points do not fix so many unknowns: the radius is uncertain by more than 30 %. Fit a round lens, or click more.',
+    )
+  }
   if (covariance === null) notes.push('The points leave some parameter free: their uncertainties are not given.')
   if (!converged) notes.push('The search ended before it settled; move the lens or the points and fit again.')
   // A model that fits exceeds this in 0.3 % of cases with one degree of freedom (9), and in fewer with more.
