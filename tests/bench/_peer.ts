@@ -1,11 +1,12 @@
 /**
  * The scripts that a user would write instead, which speed is measured against. Their folder is given by the environment
- * variable RINGSIDE_PEERS; without it the comparison is skipped and said so. They run on Debian's Python with astropy and scipy.
+ * variable RINGSIDE_PEERS; without it the comparison is skipped and said so. They run on Debian's Python with astropy and scipy,
+ * or on that of RINGSIDE_PYTHON.
  */
 import { spawnSync } from 'node:child_process'
 import path from 'node:path'
 
-const PYTHON = '/usr/bin/python3'
+const PYTHON = process.env.RINGSIDE_PYTHON ?? '/usr/bin/python3'
 
 /** What the script prints, or a sentence on why it could not be asked. */
 export function askPeer(script: string, ...argv: string[]): { answer: string } | { skipped: string } {
