@@ -2,6 +2,7 @@
 
 import Link from 'next/link'
 import { usePathname } from 'next/navigation'
+import { useEffect, useRef } from 'react'
 
 export function NavLink({
   href,
@@ -16,8 +17,14 @@ export function NavLink({
 }) {
   const path = usePathname()
   const here = exact ? path === href : path === href || path.startsWith(`${href}/`)
+  const link = useRef<HTMLAnchorElement>(null)
+  // On a phone the places are a row that scrolls: the one where you are is in sight.
+  useEffect(() => {
+    if (here) link.current?.scrollIntoView({ block: 'nearest', inline: 'nearest' })
+  }, [here])
   return (
     <Link
+      ref={link}
       href={href}
       aria-current={here ? 'page' : undefined}
       className={`flex min-h-9 items-center justify-between gap-3 whitespace-nowrap rounded-control px-3 text-body ${

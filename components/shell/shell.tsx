@@ -1,3 +1,4 @@
+import { CircleUser } from 'lucide-react'
 import Link from 'next/link'
 import type { ReactNode } from 'react'
 import { Mark } from '@/components/ui/mark'
@@ -39,6 +40,13 @@ export function Shell({
             Ringside
           </Link>
           <div className="flex md:hidden">
+            <Link
+              href="/account"
+              aria-label={`Your account, ${viewerName}`}
+              className="grid size-9 place-items-center rounded-control text-mute hover:bg-raise hover:text-text"
+            >
+              <CircleUser size={17} aria-hidden="true" />
+            </Link>
             <ThemeSwitch />
             <SignOutButton />
           </div>
@@ -50,7 +58,13 @@ export function Shell({
           ))}
         </nav>
         <div className="mt-auto hidden items-center justify-between gap-2 pl-3 pt-4 md:flex">
-          <span className="truncate text-note text-mute">{viewerName}</span>
+          <Link
+            href="/account"
+            title="Your account"
+            className="truncate rounded-control py-1 text-note text-mute hover:text-text"
+          >
+            {viewerName}
+          </Link>
           <span className="flex">
             <ThemeSwitch />
             <SignOutButton />

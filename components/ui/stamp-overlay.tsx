@@ -33,7 +33,7 @@ export function StampOverlay({ width, height, geometry }: { width: number; heigh
       fill="none"
       stroke="currentColor"
       strokeWidth="1.5"
-      fontSize="3.6"
+      fontSize="3.2"
       aria-hidden="true"
       style={{ filter: 'drop-shadow(0 0 1px rgb(0 0 0 / 0.9))' }}
     >

@@ -17,8 +17,8 @@ const CELLS = [
   { letter: 'N', dot: 'bg-grade-n', cell: 'bg-grade-n/26' },
 ] as const
 
-/** More dots than this do not fit a cell and are written as a number. */
-const MOST_DOTS = 5
+/** More dots than this do not fit a narrow cell and are written as a number. */
+const MOST_DOTS = 4
 
 export function describeVotes(votes: Votes): string {
   const parts = CELLS.filter(({ letter }) => votes[letter] > 0).map(({ letter }) => `${votes[letter]} ${letter}`)

@@ -1,6 +1,7 @@
 import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateState } from '../schema/intake'
+import { among, inCampaign } from './by-ids'
 
 /** Which candidates of a campaign a list may draw on, and of which of them it may use what people judged. */
 export interface CandidateScope {
@@ -27,11 +28,6 @@ export interface CandidateRow {
   reason: string | null
 }
 
-/** `ids` as one bound value, so that a list of any length stays one statement. */
-function among(ids: readonly number[]) {
-  return sql<number>`(select value from json_each(${JSON.stringify(ids)}))`
-}
-
 /**
  * Whether the reader may see what was judged of this candidate. The same condition as `listJudgedAmong` of the grading room:
  * a standing answer of their own that is a grade and not 'cannot judge'. A list made once costs what the reader has graded,
@@ -43,12 +39,6 @@ function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBoo
     where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and own.grade != 'U'
       and not exists (select 1 from grade newer where newer.replaces = own.id))`
 }
-
-/**
- * The campaign as a condition that takes no index: for lists of ids, which are few. SQLite would take the campaign's own
- * index, trusting it to be narrow, and read the whole campaign.
- */
-const inCampaign = (column: string, campaignId: number) => sql<SqlBool>`+${sql.ref(column)} = ${campaignId}`
 
 function candidates(db: Kysely<DB>, scope: CandidateScope) {
   return db

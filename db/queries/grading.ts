@@ -1,11 +1,7 @@
-import { sql, type Insertable, type Kysely } from 'kysely'
+import type { Insertable, Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { GradeRow, GradeTable } from '../schema/grading'
-
-/** `ids` as one bound value, so that a list of any length stays one statement. */
-function among(ids: readonly number[]) {
-  return sql<number>`(select value from json_each(${JSON.stringify(ids)}))`
-}
+import { among, inCampaign } from './by-ids'
 
 /** Those of the candidates that belong to the campaign. */
 export async function listCandidatesAmong(
@@ -16,7 +12,7 @@ export async function listCandidatesAmong(
   const rows = await db
     .selectFrom('candidate')
     .select('id')
-    .where('campaign_id', '=', campaignId)
+    .where(inCampaign('campaign_id', campaignId))
     .where('id', 'in', among(ids))
     .execute()
   return rows.map((row) => row.id)
@@ -33,8 +29,8 @@ export async function listJudgedAmong(
     .selectFrom('grade')
     .select('candidate_id')
     .distinct()
-    .where('campaign_id', '=', campaignId)
-    .where('person_id', '=', personId)
+    .where(inCampaign('campaign_id', campaignId))
+    .where(inCampaign('person_id', personId))
     .where('candidate_id', 'in', among(ids))
     .where('grade', '!=', 'U')
     .where((e) =>

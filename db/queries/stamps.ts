@@ -1,6 +1,7 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign } from '../schema/campaigns'
+import { among, inCampaign } from './by-ids'
 
 export interface StampOfCandidate {
   candidateId: number
@@ -22,8 +23,8 @@ export async function listStamps(
   return db
     .selectFrom('stamp')
     .select(['candidate_id as candidateId', 'recipe_id as recipeId', 'view', 'sha256', 'width', 'height', 'note'])
-    .where('campaign_id', '=', campaignId)
-    .where('candidate_id', 'in', candidateIds)
+    .where(inCampaign('campaign_id', campaignId))
+    .where('candidate_id', 'in', among(candidateIds))
     .orderBy('recipe_id', 'desc')
     .orderBy('id')
     .execute()

@@ -3,14 +3,18 @@
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
 import { benchImaging } from './bench-imaging'
+import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
 import { benchReliability } from './bench-reliability'
+import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, () => Promise<string[]>> = {
   imaging: benchImaging,
   'lens-light': () => benchLensLight(),
   match: benchMatch,
+  votable: benchVotable,
+  lens: benchLens,
   reliability: () => benchReliability(),
 }
 

@@ -63,14 +63,22 @@ export async function changeRule(
   })
 }
 
-/** For files that arrive from now on; what was matched already stays. */
+/** For files that arrive from now on and for those that could not be matched so far; what was matched already stays. */
 export async function changeNamePattern(
   db: Kysely<DB>,
   permit: CampaignPermit<'lead'>,
   namePattern: string | null,
 ): Promise<void> {
   await db.transaction().execute(async (transaction) => {
-    await setNamePattern(transaction, permit.campaign.id, namePattern)
+    const campaignId = permit.campaign.id
+    await setNamePattern(transaction, campaignId, namePattern)
+    // Kind and payload are the intake room's, which comes below this one.
+    await enqueueJob(transaction, {
+      kind: JOB.readFiles,
+      campaignId,
+      uniqueKey: `${JOB.readFiles}:${campaignId}:unmatched`,
+      payload: { campaignId, unmatchedAgain: true },
+    })
     await recordEvent(transaction, {
       personId: permit.viewer.id,
       campaignId: permit.campaign.id,

@@ -13,7 +13,12 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
     { href: home, label: 'Overview', exact: true },
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/bench`, label: 'Bench' }]),
     ...(lead ? [{ href: `${home}/intake`, label: 'Intake' }] : []),
-    { href: `${home}/candidates`, label: 'Candidates', count: counts.candidates },
+    // Without counts for graders: what leaves out calibration stamps beside a list that hides them would give their number away.
+    {
+      href: `${home}/candidates`,
+      label: 'Candidates',
+      count: permit.role === 'grader' ? undefined : counts.candidates,
+    },
     ...(lead ? [{ href: `${home}/splits`, label: 'Splits', count: counts.split }] : []),
     { href: `${home}/catalogue`, label: 'Catalogue', count: permit.role === 'grader' ? undefined : counts.confirmed },
     ...(lead
