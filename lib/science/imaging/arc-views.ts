@@ -1,6 +1,7 @@
 /** The views in which arcs show beside the galaxy that hides them: lens removed, blue only, and colour for the bright core. */
 import { blueMinusRed } from './blue-minus-red'
 import { removeLensLight } from './lens-light'
+import { saturatedPixels } from './lens-light/core-faults'
 import { findCore } from './lens-light/find-core'
 import type { NormalisedPlane } from './normalise-planes'
 import { extraLimits, type Recipe } from './recipe'
@@ -8,6 +9,8 @@ import { renderColour } from './render-colour'
 import { renderDeep } from './render-deep'
 import { renderGrey } from './render-grey'
 import type { RenderedView } from './rendered-view'
+
+const SATURATED = 'The core is saturated: no colour there, drawn as flat grey.'
 
 /** @param planes usable, of one size, shortest wavelength first, as in all of these. */
 export function residualView(planes: NormalisedPlane[], recipe: Recipe): RenderedView | null {
@@ -26,15 +29,22 @@ export function residualView(planes: NormalisedPlane[], recipe: Recipe): Rendere
 /** The shortest band minus the longest; null when there is only one. */
 export function blueView(planes: NormalisedPlane[], recipe: Recipe): RenderedView | null {
   if (planes.length < 2) return null
+  const { width, height } = planes[0]
+  const { plane, note } = bluePlane(planes)
+  const pixels = renderDeep([plane], extraLimits(recipe).blue)
+  return { key: 'blue', width, height, channels: 1, pixels, note }
+}
+
+/** What the blue view shows, in units of its noise, from at least two planes. */
+export function bluePlane(planes: NormalisedPlane[]): { plane: NormalisedPlane; note: string | null } {
   const [blue, red] = [planes[0], planes[planes.length - 1]]
-  const { width, height } = blue
   const core = findCore(planes)
   const difference = core && blueMinusRed(blue, red, core.x, core.y)
-  const plain = `No galaxy in the middle to scale ${red.band} by: this is ${blue.band} as it is.`
-  const values = difference ? difference.values.map((value) => value / difference.sigma) : blue.values
-  const pixels = renderDeep([{ ...blue, values }], extraLimits(recipe).blue)
-  const note = difference ? null : plain
-  return { key: 'blue', width, height, channels: 1, pixels, note }
+  if (!difference) {
+    const note = `No galaxy in the middle to scale ${red.band} by: this is ${blue.band} as it is.`
+    return { plane: blue, note }
+  }
+  return { plane: { ...blue, values: difference.values.map((value) => value / difference.sigma) }, note: null }
 }
 
 export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedView | null {
@@ -43,3 +53,5 @@ export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedVie
   const pixels = renderColour(planes, recipe, extraLimits(recipe).core)
   return { key: 'core', width, height, channels: 3, pixels, note: null }
 }
+
+const joined = (parts: (string | null)[]): string | null => parts.filter(Boolean).join(' ') || null

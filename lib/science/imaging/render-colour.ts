@@ -10,12 +10,19 @@ import { MISSING_GREY } from './render-grey'
 import { smoothBinomial } from './smooth'
 import { whiteLevel } from './white-level'
 
-/** RGB interleaved, row 0 = top, from at least two usable planes of one size, shortest wavelength first. */
-export function renderColour(
-  planes: NormalisedPlane[],
-  recipe: Recipe,
-  limits: ColourLimits = recipe.colour,
-): Uint8Array {
+/** A colour picture before its brightness is drawn: channels in units of the noise, row 0 = bottom. */
+export interface ColourChannels {
+  red: Float32Array
+  green: Float32Array
+  blue: Float32Array
+  /** What the white point is measured on. Missing pixels are 0 here and in the channels. */
+  intensity: Float32Array
+  /** Pixels without data in a band that counts. */
+  missing: number[]
+}
+
+/** The channels with their hue calmed, from at least two usable planes of one size, shortest wavelength first. */
+export function colourChannels(planes: NormalisedPlane[], recipe: Recipe, limits: ColourLimits): ColourChannels {
   const { width, height } = planes[0]
   const balance = colourBalance(planes.map((plane) => plane.sigma))
   const bandWeights = planes.map((plane, k) => (recipe.weights?.[plane.band] ?? 1) * balance[k])
@@ -27,9 +34,20 @@ export function renderColour(
   ) as [Float32Array, Float32Array, Float32Array]
   const missing = missingPixels(red, green, blue)
   const [r, g, b, intensity] = calmHues(red, green, blue, width, height, limits)
+  return { red: r, green: g, blue: b, intensity, missing }
+}
+
+/** RGB interleaved, row 0 = top, from at least two usable planes of one size, shortest wavelength first. */
+export function renderColour(
+  planes: NormalisedPlane[],
+  recipe: Recipe,
+  limits: ColourLimits = recipe.colour,
+): Uint8Array {
+  const { width, height } = planes[0]
+  const { red, green, blue, intensity, missing } = colourChannels(planes, recipe, limits)
   const white = whiteLevel(intensity, limits) - limits.blackSigma
   const { stretch, Q } = luptonFromLimits(white, limits.softeningSigma)
-  const upward = luptonRgb(r, g, b, { minimum: limits.blackSigma, stretch, Q })
+  const upward = luptonRgb(red, green, blue, { minimum: limits.blackSigma, stretch, Q })
   for (const i of missing) upward.fill(MISSING_GREY, 3 * i, 3 * i + 3)
   return flipRows(upward, 3 * width, height)
 }

@@ -13,12 +13,18 @@ const SMOOTHED_NOISE = 3 / 8
 
 export function renderDeep(planes: NormalisedPlane[], limits: DeepLimits): Uint8Array {
   const { width, height } = planes[0]
+  return renderGrey(deepValues(planes, limits), width, height, limits)
+}
+
+/** What the deep view shows, in units of its noise, row 0 = bottom; NaN only where no band has data. */
+export function deepValues(planes: NormalisedPlane[], limits: DeepLimits): Float32Array {
+  const { width, height } = planes[0]
   const combined = combine(planes)
-  if (!limits.smooth) return renderGrey(combined, width, height, limits)
+  if (!limits.smooth) return combined
   const gaps = fillGaps(combined)
   const smoothed = smoothBinomial(combined, width, height, 1 / SMOOTHED_NOISE)
   for (const pixel of gaps) smoothed[pixel] = Number.NaN
-  return renderGrey(smoothed, width, height, limits)
+  return smoothed
 }
 
 /** Puts the sky level where there is no data, and says where that was. In place. */

@@ -24,14 +24,12 @@ export type { RenderedView } from './rendered-view'
  */
 export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[] {
   const native = planes.map(normalisePlane)
-  const matched = matchScales(planes)
-  const all = matched.planes.map((plane, k) => (plane === planes[k] ? native[k] : normalisePlane(plane)))
+  const { all, group, note: matchNote } = commonGrid(planes, native)
   const wanted = recipe.views.flatMap((key) => bandOfView(key) ?? [])
   const absent = wanted.filter((band) => !all.some((plane) => plane.band === band))
-  const group = largestGroup(all)
   const left = all.filter((plane) => !group.includes(plane))
   const noColour = recipe.views.includes('colour') ? noColourNote(group, all, absent) : null
-  const scene: Scene = { group, left, absent, recipe, matchNote: matched.note }
+  const scene: Scene = { group, left, absent, recipe, matchNote }
   const views: RenderedView[] = []
   for (const key of recipe.views) {
     const band = bandOfView(key)
@@ -44,6 +42,20 @@ export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[]
   const first = views.find((view) => view.key === 'deep') ?? views[0]
   if (noColour !== null && first) first.note = [noColour, first.note].filter(Boolean).join(' ')
   return views
+}
+
+/**
+ * Brings bands to one grid for the combined views.
+ * @param native the same planes normalised.
+ * @returns all planes, `group` those of the commonest size, which the combined views are made of, and what was resampled.
+ */
+export function commonGrid(
+  planes: BandPlane[],
+  native: NormalisedPlane[],
+): { all: NormalisedPlane[]; group: NormalisedPlane[]; note: string | null } {
+  const matched = matchScales(planes)
+  const all = matched.planes.map((plane, k) => (plane === planes[k] ? native[k] : normalisePlane(plane)))
+  return { all, group: largestGroup(all), note: matched.note }
 }
 
 /** What the combined views are made of. */
