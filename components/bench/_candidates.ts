@@ -17,6 +17,7 @@ export function benchCandidate(id: number, views = ['colour', 'deep', 'band:g'])
       note: null,
     })),
     geometry: { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true },
+    planesUrl: `/planes/${id}`,
   }
 }
 

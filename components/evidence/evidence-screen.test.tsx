@@ -54,6 +54,7 @@ const EVIDENCE: CandidateEvidence = {
   pictures: {
     views: [{ key: 'colour', label: 'Colour', url: null, width: 0, height: 0, note: null }],
     geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+    planesUrl: null,
   },
   judgement: JUDGEMENT,
 }

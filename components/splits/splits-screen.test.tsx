@@ -86,6 +86,7 @@ function evidence(id: number, name: string, more: Partial<Judgement> = {}): Cand
     pictures: {
       views: [view('colour', 'Colour'), view('deep', 'Deep'), view('band:g', 'g')],
       geometry: { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true },
+      planesUrl: null,
     },
     judgement: judgement(more),
   }

@@ -53,6 +53,36 @@ export async function listHeldPlanes(
     .execute()
 }
 
+export interface PlaneSourceRow extends Omit<HeldPlaneRow, 'candidate'> {
+  width: number
+  height: number
+}
+
+/** What the planes of a candidate are read from; nothing for a candidate of another campaign. */
+export async function listPlaneSources(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateId: number,
+): Promise<PlaneSourceRow[]> {
+  return db
+    .selectFrom('candidate')
+    .innerJoin('plane', 'plane.candidate_id', 'candidate.id')
+    .innerJoin('file', 'file.id', 'plane.file_id')
+    .select([
+      'plane.band',
+      'plane.hdu',
+      'plane.plane_index as planeIndex',
+      'plane.width',
+      'plane.height',
+      'plane.file_id as fileId',
+      'file.name as fileName',
+      'file.sha256',
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.id', '=', candidateId)
+    .execute()
+}
+
 /** File names with the candidate that has their planes, by key of the file. */
 export async function listFilesOfCandidates(
   db: Kysely<DB>,

@@ -36,6 +36,10 @@ export interface PlaneGeometry {
   width: number
   height: number
   wcs: string | null
+  hdu: number
+  planeIndex: number
+  /** Of the file. */
+  sha256: string
   /** Of the plane's own header. */
   pixelScaleArcsec: number | null
   /** Of the candidate, which a manifest may have given. */
@@ -51,12 +55,16 @@ export async function listPlaneGeometries(
   return db
     .selectFrom('plane')
     .innerJoin('candidate', 'candidate.id', 'plane.candidate_id')
+    .innerJoin('file', 'file.id', 'plane.file_id')
     .select([
       'plane.candidate_id as candidateId',
       'plane.band',
       'plane.width',
       'plane.height',
       'plane.wcs',
+      'plane.hdu',
+      'plane.plane_index as planeIndex',
+      'file.sha256',
       'plane.pixel_scale_arcsec as pixelScaleArcsec',
       'candidate.pixel_scale_arcsec as candidateScaleArcsec',
     ])

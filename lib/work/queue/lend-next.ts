@@ -23,6 +23,7 @@ import { queueProgress, type QueueProgress } from './queue-progress'
 export interface BenchCandidate extends QueuedCandidate {
   views: PictureView[]
   geometry: StampGeometry
+  planesUrl: string | null
 }
 
 export interface LentQueue extends QueueProgress {
@@ -67,7 +68,7 @@ export async function lendNext(db: Kysely<DB>, permit: CampaignPermit<'grade'>, 
   return {
     candidates: lent.candidates.flatMap((candidate) => {
       const shown = pictures.get(candidate.id)
-      return shown ? [{ ...candidate, views: shown.views, geometry: shown.geometry }] : []
+      return shown ? [{ ...candidate, ...shown }] : []
     }),
     until: lent.until,
     imaged: await hasImagedCandidate(db, campaign.id),

@@ -124,7 +124,11 @@ export async function candidateEvidence(
     lensRedshift: candidate.lens_redshift,
     sourceRedshift: candidate.source_redshift,
     files: await listFilesOf(db, candidateId),
-    pictures: pictures ?? { views: [], geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true } },
+    pictures: pictures ?? {
+      views: [],
+      geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+      planesUrl: null,
+    },
     judgement: revealed ? await judgementOf(db, permit, candidate) : null,
   }
 }

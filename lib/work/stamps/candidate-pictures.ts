@@ -8,6 +8,7 @@ import { fromJson } from '@/db/schema/values'
 import { viewsOf, type Recipe } from '@/lib/science/imaging/recipe'
 import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
 import { candidateGeometry } from './candidate-geometry'
+import { planesHash, type PlaneSource } from './planes-hash'
 
 export interface PictureView {
   /** As in the recipe: `colour`, `deep`, `band:g`. */
@@ -24,6 +25,8 @@ export interface PictureView {
 export interface CandidatePictures {
   views: PictureView[]
   geometry: StampGeometry
+  /** Address of the pixels for live contrast; null without any. */
+  planesUrl: string | null
 }
 
 /** The address of a stamp. Its name is its hash, so it may be kept for ever. */
@@ -38,7 +41,8 @@ export async function picturesOf(
   campaign: Campaign,
   candidateIds: number[],
 ): Promise<Map<number, CandidatePictures>> {
-  const recipe = JSON.parse((await requireRecipe(db, campaign.id)).parameters) as Recipe
+  const { parameters, hash } = await requireRecipe(db, campaign.id)
+  const recipe = JSON.parse(parameters) as Recipe
   const bands = fromJson(campaign.bands)
   const stamps = groupByCandidate(await listStamps(db, campaign.id, candidateIds))
   const planes = groupByCandidate(await listPlaneGeometries(db, campaign.id, candidateIds))
@@ -49,10 +53,15 @@ export async function picturesOf(
       const made = newestOf(stamps.get(id) ?? [])
       const views = names.map(({ key, label }) => pictureView(campaign.slug, key, label, made.get(key)))
       const ordered = (planes.get(id) ?? []).toSorted((a, b) => place(a) - place(b))
-      return [id, { views, geometry: candidateGeometry(ordered) }]
+      const planesUrl = ordered.length > 0 ? planesUrlOf(campaign.slug, id, ordered, hash) : null
+      return [id, { views, geometry: candidateGeometry(ordered), planesUrl }]
     }),
   )
 }
+
+/** Its name is in the address, so it may be kept for ever. */
+const planesUrlOf = (slug: string, id: number, sources: PlaneSource[], recipeHash: string): string =>
+  `/api/campaigns/${slug}/candidates/${id}/planes?v=${planesHash(sources, recipeHash)}`
 
 function groupByCandidate<T extends { candidateId: number }>(rows: readonly T[]): Map<number, T[]> {
   const groups = new Map<number, T[]>()

@@ -1,7 +1,7 @@
 import { separationArcsec } from '@/lib/science/sky/separation'
 import { bandTaken } from '@/lib/work/intake/refusals'
 import { drawStamps } from './draw-stamps'
-import { readCutouts, readHeldPlane, type Cutout } from './read-cutout'
+import { bandPlane, readCutouts, readHeldPlane, type Cutout } from './read-cutout'
 import type { CandidateOutcome, CandidateToImage, FileOutcome, FileToRead, ImageTask, StampMade } from './worker-tasks'
 
 /** Farther than this from the other position of the same candidate, a person should look (common practice, no source). */
@@ -50,12 +50,7 @@ export async function imageCandidate(
 
 /** Drawing is under way when this returns; the returned function waits for it, so that the next candidate can be read. */
 function startDrawing(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageTask): () => Promise<CandidateOutcome> {
-  const planes = cutouts.map(({ plane, data }) => ({
-    band: plane.band,
-    width: plane.width,
-    height: plane.height,
-    data,
-  }))
+  const planes = cutouts.map(bandPlane)
   const drawing: Promise<StampMade[] | Error> = Promise.resolve()
     .then(() => drawStamps(planes, task.recipe, task.stampFolder))
     .catch((error: unknown) => (error instanceof Error ? error : new Error(String(error))))

@@ -6,9 +6,18 @@ import { readFileSync } from 'node:fs'
 import { bandsOfFile } from '@/lib/work/intake/bands-of-file'
 import { candidateOfHeaders } from '@/lib/work/intake/candidate-of-header'
 import { parseManifest, type ParsedManifest } from '@/lib/work/intake/parse-manifest'
+import { codePlanes } from './code-planes'
 import { imageCandidate } from './image-candidate'
 import { openFits } from './read-cutout'
-import type { CandidateOutcome, FileProbe, ImageTask, ProbeTask, StoredFile } from './worker-tasks'
+import type {
+  CandidateOutcome,
+  FileProbe,
+  ImageTask,
+  PlanesMade,
+  PlanesTask,
+  ProbeTask,
+  StoredFile,
+} from './worker-tasks'
 
 /** While the PNGs of this many candidates are encoded in libuv's threads, the next is read and rendered here. */
 const AHEAD = 3
@@ -25,6 +34,8 @@ export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
   }
   return Promise.all(waiting)
 }
+
+export const planes = (task: PlanesTask): Promise<PlanesMade> => codePlanes(task)
 
 export async function probe({ files, bands }: ProbeTask): Promise<FileProbe[]> {
   const probes: FileProbe[] = []

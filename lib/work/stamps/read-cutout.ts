@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import { FitsError, type FitsFile, type FitsImage } from '@/lib/science/fits/fits-types'
 import { readFits } from '@/lib/science/fits/read-fits'
+import type { BandPlane } from '@/lib/science/imaging/normalise-planes'
 import { estimateNoise } from '@/lib/science/imaging/statistics'
 import type { SkyPosition } from '@/lib/science/sky/separation'
 import { pixelScaleArcsec, pixelToSky, readWcs, WcsError, type Wcs } from '@/lib/science/sky/wcs'
@@ -88,6 +89,14 @@ function centreOf(wcs: Wcs, width: number, height: number): SkyPosition | null {
   if (!Number.isFinite(raDeg) || !Number.isFinite(decDeg)) return null
   return { raDeg: ((raDeg % 360) + 360) % 360, decDeg }
 }
+
+/** As pictures are made of it, the stored ones and those drawn live. */
+export const bandPlane = ({ plane, data }: Cutout): BandPlane => ({
+  band: plane.band,
+  width: plane.width,
+  height: plane.height,
+  data,
+})
 
 /** Pixels of a plane that was read before; null when its file can no longer be read or has changed its shape. */
 export async function readHeldPlane(held: HeldPlane): Promise<Cutout | null> {

@@ -2,7 +2,7 @@ import type { ParsedManifest } from '@/lib/work/intake/parse-manifest'
 import type { Recipe } from '@/lib/science/imaging/recipe'
 import type { SkyPosition } from '@/lib/science/sky/separation'
 
-/** What crosses between the server and its image workers: names and numbers, never pixels. */
+/** What crosses between the server and its image workers: names and numbers, and pixels only coded and zipped. */
 
 export interface StoredFile {
   id: number
@@ -97,6 +97,19 @@ export interface FileProbe {
   /** It holds several bands as extensions or as a cube. */
   manyBands: boolean
   refusal: { fault: string; reason: string } | null
+}
+
+export interface PlanesTask {
+  /** In order of wavelength. */
+  planes: HeldPlane[]
+  recipe: Recipe
+}
+
+/** Gzipped (lib/science/imaging/plane-codec.ts), or the name of the file that can no longer be read. */
+export type PlanesMade = { bytes: Uint8Array<ArrayBuffer> } | { lost: string }
+
+export interface PlanesRunner {
+  planes(task: PlanesTask): Promise<PlanesMade>
 }
 
 /** Done by a pool of threads in the server, and directly in tests. */
