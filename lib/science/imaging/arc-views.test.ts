@@ -148,6 +148,15 @@ describe('bands that are missing or do not fit', () => {
     expect(difference / plain.pixels.length).toBeLessThan(8)
   })
 
+  it('that are saturated in the core have no colour there, and the note says so', () => {
+    const full = candidate('elliptical', 5).planes.map((plane, k) =>
+      k === 2 ? { ...plane, data: plane.data.map((value) => Math.min(value, 0.5 * Math.max(...plane.data))) } : plane,
+    )
+    const blue = find(renderViews(full, recipe), 'blue')
+    expect(blue.note).toBe('The core is saturated: no colour there, drawn as flat grey.')
+    expect(blue.pixels[39 * 80 + 40]).toBe(MISSING_GREY)
+  })
+
   it('have gaps that are drawn grey and named', () => {
     const gappy = planes.map((plane, k) =>
       k === 1 ? { ...plane, data: plane.data.slice().fill(Number.NaN, 0, 800) } : plane,

@@ -44,7 +44,10 @@ export function bluePlane(planes: NormalisedPlane[]): { plane: NormalisedPlane; 
     const note = `No galaxy in the middle to scale ${red.band} by: this is ${blue.band} as it is.`
     return { plane: blue, note }
   }
-  return { plane: { ...blue, values: difference.values.map((value) => value / difference.sigma) }, note: null }
+  const values = difference.values.map((value) => value / difference.sigma)
+  const full = [blue, red].flatMap((plane) => saturatedPixels(plane, core.x, core.y))
+  for (const pixel of full) values[pixel] = Number.NaN
+  return { plane: { ...blue, values }, note: full.length > 0 ? SATURATED : null }
 }
 
 export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedView | null {
@@ -53,5 +56,3 @@ export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedVie
   const pixels = renderColour(planes, recipe, extraLimits(recipe).core)
   return { key: 'core', width, height, channels: 3, pixels, note: null }
 }
-
-const joined = (parts: (string | null)[]): string | null => parts.filter(Boolean).join(' ') || null

@@ -15,6 +15,9 @@ const FREE = { centrePixels: 0.1, coreEllipticity: 0.15, outerEllipticity: 0.25 
 /** Bands may be off by a fraction of a pixel and rounded differently by their seeing. */
 const BAND = { centrePixels: 0.1, coreEllipticity: 0.05, outerEllipticity: 0.01 }
 const CORE_FWHM_TO_TURN = 0.65
+/** Product of the ellipticities of core and outside from which they cross, and the step to a wider turn. */
+const CROSSED = 0.003
+const WIDER = 1.4
 
 export interface BandLight {
   geometry: EllipseGeometry
@@ -55,6 +58,7 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
   const fitReach = 0.3 * Math.max(width, height)
   let geometry: EllipseGeometry = { x: core.x, y: core.y, core: [0, 0], outer: [0, 0], turnRadius: 2.5 }
   const anchor = geometry
+  let turn = 1
   let profile: RadialProfile | null = null
   let excluded: Uint8Array = coloured
   for (const shapeDoubt of SHAPE_DOUBTS) {
@@ -63,7 +67,7 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
     profile = fitProfile(basis, profileRows(basis, sorted, radii, stack, excluded, profile, foreign))
     excluded = coloured.slice()
     markAbove(excluded, stack, radii, profile, width, height, shapeDoubt)
-    geometry = { ...geometry, turnRadius: turnRadiusOf(profile) }
+    geometry = { ...geometry, turnRadius: turn * turnRadiusOf(profile) }
     geometry = improveGeometry(
       geometry,
       profile,
@@ -77,6 +81,12 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
       FREE,
       anchor,
     )
+    // A core drawn out across the galaxy means that the ellipses turn round too near to the centre.
+    const along = geometry.core[0] * geometry.outer[0] + geometry.core[1] * geometry.outer[1]
+    if (along < -CROSSED) {
+      turn *= WIDER
+      geometry = { ...geometry, core: [0, 0] }
+    }
   }
   const bands = planes.map((plane) => fitBand(plane, geometry, excluded, basis, rings, fitReach, foreign))
   return { core, saturated, geometry, excluded, bands }
@@ -103,10 +113,10 @@ function fitBand(
   let geometry = joint
   let profile: RadialProfile | null = null
   let radii = ellipticalRadii(geometry, width, height)
-  for (let round = 0; round < 3; round++) {
+  for (let round = 0; round < 2; round++) {
     const sorted = rings.sort(radii)
     profile = fitProfile(basis, profileRows(basis, sorted, radii, values, excluded, profile, foreign))
-    if (round === 2) break
+    if (round === 1) break
     geometry = improveGeometry(geometry, profile, values, excluded, foreign, width, height, fitReach, 0.02, BAND, joint)
     radii = ellipticalRadii(geometry, width, height)
   }
