@@ -149,7 +149,7 @@ describe('bands that are missing or do not fit', () => {
   })
 
   it('that are saturated in the core have no colour there, and the note says so', () => {
-    const full = candidate('elliptical', 5).planes.map((plane, k) =>
+    const full = candidate('elliptical', 1005).planes.map((plane, k) =>
       k === 2 ? { ...plane, data: plane.data.map((value) => Math.min(value, 0.5 * Math.max(...plane.data))) } : plane,
     )
     const blue = find(renderViews(full, recipe), 'blue')
