@@ -9,6 +9,14 @@ export interface BandPlane {
   data: Float32Array
   /** Where known, bands of different scales are brought to one grid before they are combined. */
   pixelScaleArcsec?: number | null
+  /** Where known (as in StampGeometry), bands that lie differently on the sky are turned before they are combined. */
+  orientation?: PlaneOrientation | null
+}
+
+/** Direction of north, degrees counter-clockwise from up, and whether east is 90 degrees counter-clockwise of it. */
+export interface PlaneOrientation {
+  northAngleDeg: number
+  eastLeft: boolean
 }
 
 export interface NormalisedPlane {

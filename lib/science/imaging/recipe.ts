@@ -39,6 +39,8 @@ export interface Recipe {
   core?: ColourLimits
   /** Side of the close field of view, arcsec, beside the whole cutout; 12 where none is given. */
   closeFieldArcsec?: number
+  /** Pictures are turned so that north is up and east is left, where the headers say how they lie. */
+  northUp?: boolean
   /** Factor on a band's noise-normalised brightness in the colour view, by band; 1 where none is given. */
   weights?: Record<string, number>
 }

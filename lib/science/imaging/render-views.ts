@@ -5,9 +5,11 @@
 import { blueView, coreView, residualView } from './arc-views'
 import { matchScales } from './match-scales'
 import { normalisePlane, type BandPlane, type NormalisedPlane } from './normalise-planes'
+import { orientPlanes } from './orient-planes'
 import { bandOfView, type Recipe } from './recipe'
 import { renderColour } from './render-colour'
 import { renderDeep } from './render-deep'
+
 import { MISSING_GREY, renderGrey } from './render-grey'
 import { arcNote, bandNote, colourNote, deepNote, noColourNote, sizesNote } from './view-notes'
 
@@ -18,13 +20,15 @@ export type { RenderedView } from './rendered-view'
 
 /**
  * The recipe's views that these planes allow, in the recipe's order.
- * @param planes shortest wavelength first, row 0 = bottom. Bands may differ in size: each keeps its own band view, while
+ * @param given shortest wavelength first, row 0 = bottom. Turned north up first where orient-planes.ts says so. Bands may differ in size: each keeps its own band view, while
  *   colour and deep are made of the largest group of equal size.
  * @returns an empty list for no planes. Never throws when each plane has width x height pixels, at least one.
  */
-export function renderViews(planes: BandPlane[], recipe: Recipe): RenderedView[] {
+export function renderViews(given: BandPlane[], recipe: Recipe): RenderedView[] {
+  const { planes, note: turnNote } = orientPlanes(given, recipe.northUp === true)
   const native = planes.map(normalisePlane)
-  const { all, group, note: matchNote } = commonGrid(planes, native)
+  const { all, group, note } = commonGrid(planes, native)
+  const matchNote = [turnNote, note].filter(Boolean).join(' ') || null
   const wanted = recipe.views.flatMap((key) => bandOfView(key) ?? [])
   const absent = wanted.filter((band) => !all.some((plane) => plane.band === band))
   const left = all.filter((plane) => !group.includes(plane))
