@@ -96,12 +96,15 @@ function isophoteModels(cases: Case[]): (Models | null)[] | string {
   const pixels = cases.flatMap(({ planes }) =>
     planes.map(({ data }) => Buffer.from(data.buffer, data.byteOffset, data.byteLength)),
   )
-  const run = spawnSync('/usr/bin/python3', [script], {
+  const run = spawnSync(process.env.RINGSIDE_PYTHON ?? '/usr/bin/python3', [script], {
     input: Buffer.concat([header, ...pixels]),
     maxBuffer: 1 << 30,
     env: { ...process.env, OMP_NUM_THREADS: '1' },
   })
-  if (run.error || run.status !== 0) return 'isophotes: skipped, python3-photutils is not installed'
+  if (run.error || run.status !== 0) {
+    const reason = run.error?.message ?? String(run.stderr).trim().split('\n').at(-1)
+    return `isophotes: skipped, python3-photutils did not run (${reason})`
+  }
   const size = cases[0].planes[0].data.length
   const values = new Float32Array(
     run.stdout.buffer.slice(run.stdout.byteOffset, run.stdout.byteOffset + run.stdout.length),
