@@ -15,8 +15,11 @@ export function benchCandidate(id: number, views = ['colour', 'deep', 'band:g'])
       width: 80,
       height: 80,
       note: null,
+      geometry: { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true },
     })),
     geometry: { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true },
+    recipe: 1,
+    closeFieldArcsec: 12,
     planesUrl: `/planes/${id}`,
   }
 }

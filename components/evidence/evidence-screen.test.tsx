@@ -52,8 +52,20 @@ const EVIDENCE: CandidateEvidence = {
   sourceRedshift: null,
   files: [{ name: 'SWS0007_g.fits', bands: ['g'] }],
   pictures: {
-    views: [{ key: 'colour', label: 'Colour', url: null, width: 0, height: 0, note: null }],
+    views: [
+      {
+        key: 'colour',
+        label: 'Colour',
+        url: null,
+        width: 0,
+        height: 0,
+        note: null,
+        geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+      },
+    ],
     geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+    recipe: null,
+    closeFieldArcsec: 12,
     planesUrl: null,
   },
   judgement: JUDGEMENT,

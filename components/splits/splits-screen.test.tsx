@@ -17,7 +17,16 @@ beforeEach(() => {
   localStorage.clear()
 })
 
-const view = (key: string, label: string) => ({ key, label, url: `/stamps/${key}`, width: 80, height: 80, note: null })
+const geometry = { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true }
+const view = (key: string, label: string) => ({
+  key,
+  label,
+  url: `/stamps/${key}`,
+  width: 80,
+  height: 80,
+  note: null,
+  geometry,
+})
 const votes = { A: 2, B: 0, C: 0, N: 1, U: 0 }
 const RULE = { id: 1, version: 1, gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 0.9 }
 const AT = '2026-12-01T12:00:00.000Z'
@@ -85,7 +94,9 @@ function evidence(id: number, name: string, more: Partial<Judgement> = {}): Cand
     files: [],
     pictures: {
       views: [view('colour', 'Colour'), view('deep', 'Deep'), view('band:g', 'g')],
-      geometry: { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true },
+      geometry,
+      recipe: 1,
+      closeFieldArcsec: 12,
       planesUrl: null,
     },
     judgement: judgement(more),

@@ -13,7 +13,7 @@ export interface StampOfCandidate {
   note: string | null
 }
 
-/** Every stamp of these candidates, those of the newest recipe first. */
+/** The stamps of these candidates, of each those of the newest recipe that made any. */
 export async function listStamps(
   db: Kysely<DB>,
   campaignId: number,
@@ -25,7 +25,12 @@ export async function listStamps(
     .select(['candidate_id as candidateId', 'recipe_id as recipeId', 'view', 'sha256', 'width', 'height', 'note'])
     .where(inCampaign('campaign_id', campaignId))
     .where('candidate_id', 'in', among(candidateIds))
-    .orderBy('recipe_id', 'desc')
+    .where('recipe_id', '=', (e) =>
+      e
+        .selectFrom('stamp as newer')
+        .select((n) => n.fn.max('newer.recipe_id').as('id'))
+        .whereRef('newer.candidate_id', '=', 'stamp.candidate_id'),
+    )
     .orderBy('id')
     .execute()
 }

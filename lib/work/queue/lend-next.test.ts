@@ -44,7 +44,17 @@ describe('the queue', () => {
     await scenario.db.updateTable('candidate').set({ state: 'split' }).where('id', '=', ids[1]).execute()
     const answer = await ask(0, 2)
     expect(answer).toMatchObject({ given: 0, left: 4, imaged: true, until: '2026-03-01T20:20:00.000Z' })
-    expect(Object.keys(answer.candidates[0]).sort()).toEqual(['decDeg', 'geometry', 'id', 'name', 'raDeg', 'views'])
+    expect(Object.keys(answer.candidates[0]).sort()).toEqual([
+      'closeFieldArcsec',
+      'decDeg',
+      'geometry',
+      'id',
+      'name',
+      'planesUrl',
+      'raDeg',
+      'recipe',
+      'views',
+    ])
     expect(JSON.stringify(answer)).not.toMatch(/0\.97|split|truth|grades/)
   })
 

@@ -12,19 +12,14 @@ import {
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
-import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
 import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import { picturesOf, type PictureView } from '@/lib/work/stamps/candidate-pictures'
+import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import { LEASE_MS, MOST_LENT } from './lease-time'
 import { queueProgress, type QueueProgress } from './queue-progress'
 
 /** What a grader gets to see of a candidate before grading it: nothing that others, the machine or the rule made of it. */
-export interface BenchCandidate extends QueuedCandidate {
-  views: PictureView[]
-  geometry: StampGeometry
-  planesUrl: string | null
-}
+export interface BenchCandidate extends QueuedCandidate, CandidatePictures {}
 
 export interface LentQueue extends QueueProgress {
   candidates: BenchCandidate[]

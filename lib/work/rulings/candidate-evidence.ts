@@ -9,6 +9,7 @@ import type { GradeLetter } from '@/db/schema/grading'
 import type { Candidate, CandidateState, StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { notFound } from '@/lib/platform/problems/problem'
+import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
@@ -127,6 +128,8 @@ export async function candidateEvidence(
     pictures: pictures ?? {
       views: [],
       geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+      recipe: null,
+      closeFieldArcsec: CLOSE_FIELD_ARCSEC,
       planesUrl: null,
     },
     judgement: revealed ? await judgementOf(db, permit, candidate) : null,

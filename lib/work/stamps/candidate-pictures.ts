@@ -1,13 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { requireRecipe } from '@/db/queries/campaigns'
+import { listRecipesById } from '@/db/queries/recipes'
 import { listPlaneGeometries, listStamps, type PlaneGeometry, type StampOfCandidate } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
-import type { Campaign } from '@/db/schema/campaigns'
+import type { Campaign, RecipeRow } from '@/db/schema/campaigns'
 import { fromJson } from '@/db/schema/values'
-import { viewsOf, type Recipe } from '@/lib/science/imaging/recipe'
+import { closeFieldOf, viewsOf, type Recipe } from '@/lib/science/imaging/recipe'
 import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
-import { candidateGeometry } from './candidate-geometry'
+import { candidateGeometry, viewGeometry } from './candidate-geometry'
 import { planesHash, type PlaneSource } from './planes-hash'
 
 export interface PictureView {
@@ -20,11 +21,18 @@ export interface PictureView {
   height: number
   /** What a person must know about this picture. */
   note: string | null
+  /** Scale and compass of this view: bands may differ in scale. */
+  geometry: StampGeometry
 }
 
 export interface CandidatePictures {
   views: PictureView[]
+  /** Of all views together; no scale where they differ in it. */
   geometry: StampGeometry
+  /** Version of the recipe that these pictures were made by; null before there are any. */
+  recipe: number | null
+  /** Side of the close field of view, arcsec. */
+  closeFieldArcsec: number
   /** Address of the pixels for live contrast; null without any. */
   planesUrl: string | null
 }
@@ -33,30 +41,50 @@ export interface CandidatePictures {
 export const stampUrl = (slug: string, sha256: string): string => `/api/campaigns/${slug}/stamps/${sha256}`
 
 /**
- * The pictures of each of these candidates, every view of the recipe in force in its order, by candidate. The caller holds a
- * permit for the campaign; candidates of another campaign and unknown ones get views without pictures.
+ * The pictures of each of these candidates by candidate: every view of the recipe they were made by, in its order, or of the
+ * recipe in force where there are none yet. While a changed recipe is worked through, candidates that it has not reached keep
+ * their pictures whole. The caller holds a permit for the campaign; candidates of another campaign and unknown ones get views
+ * without pictures.
  */
 export async function picturesOf(
   db: Kysely<DB>,
   campaign: Campaign,
   candidateIds: number[],
 ): Promise<Map<number, CandidatePictures>> {
-  const { parameters, hash } = await requireRecipe(db, campaign.id)
-  const recipe = JSON.parse(parameters) as Recipe
+  const inForce = await requireRecipe(db, campaign.id)
   const bands = fromJson(campaign.bands)
   const stamps = groupByCandidate(await listStamps(db, campaign.id, candidateIds))
   const planes = groupByCandidate(await listPlaneGeometries(db, campaign.id, candidateIds))
-  const names = viewsOf(recipe, bands)
+  const recipes = await recipesOf(db, inForce, [...stamps.values()])
   const place = (plane: PlaneGeometry) => bands.indexOf(plane.band)
   return new Map(
     candidateIds.map((id) => {
-      const made = newestOf(stamps.get(id) ?? [])
-      const views = names.map(({ key, label }) => pictureView(campaign.slug, key, label, made.get(key)))
+      const made = stamps.get(id) ?? []
       const ordered = (planes.get(id) ?? []).toSorted((a, b) => place(a) - place(b))
-      const planesUrl = ordered.length > 0 ? planesUrlOf(campaign.slug, id, ordered, hash) : null
-      return [id, { views, geometry: candidateGeometry(ordered), planesUrl }]
+      const { recipe, version } = recipes.get(made[0]?.recipeId ?? inForce.id) ?? read(inForce)
+      const northUp = recipe.northUp === true
+      const views = viewsOf(recipe, bands).map(({ key, label }) => {
+        const stamp = made.find(({ view }) => view === key)
+        const size = { key, width: stamp?.width ?? 0, height: stamp?.height ?? 0 }
+        const url = stamp ? stampUrl(campaign.slug, stamp.sha256) : null
+        return { ...size, label, url, note: stamp?.note ?? null, geometry: viewGeometry(ordered, size, northUp) }
+      })
+      const planesUrl = ordered.length > 0 ? planesUrlOf(campaign.slug, id, ordered, inForce.hash) : null
+      const geometry = candidateGeometry(ordered, northUp)
+      const closeFieldArcsec = closeFieldOf(recipe)
+      return [id, { views, geometry, recipe: made.length > 0 ? version : null, closeFieldArcsec, planesUrl }]
     }),
   )
+}
+
+const read = ({ parameters, version }: RecipeRow) => ({ recipe: JSON.parse(parameters) as Recipe, version })
+
+/** The recipes that any of these stamps were made by and the one in force, by id. */
+async function recipesOf(db: Kysely<DB>, inForce: RecipeRow, stamps: readonly StampOfCandidate[][]) {
+  const others = new Set(stamps.flatMap(([first]) => (first ? first.recipeId : [])))
+  others.delete(inForce.id)
+  const rows = [inForce, ...(await listRecipesById(db, [...others]))]
+  return new Map(rows.map((row) => [row.id, read(row)]))
 }
 
 /** Its name is in the address, so it may be kept for ever. */
@@ -71,15 +99,4 @@ function groupByCandidate<T extends { candidateId: number }>(rows: readonly T[])
     else groups.set(row.candidateId, [row])
   }
   return groups
-}
-
-/** Views of one recipe only, the newest that was made: pictures of two recipes side by side would not compare. */
-function newestOf(stamps: readonly StampOfCandidate[]): Map<string, StampOfCandidate> {
-  const newest = stamps[0]?.recipeId
-  return new Map(stamps.filter(({ recipeId }) => recipeId === newest).map((stamp) => [stamp.view, stamp]))
-}
-
-function pictureView(slug: string, key: string, label: string, stamp: StampOfCandidate | undefined): PictureView {
-  if (!stamp) return { key, label, url: null, width: 0, height: 0, note: null }
-  return { key, label, url: stampUrl(slug, stamp.sha256), width: stamp.width, height: stamp.height, note: stamp.note }
 }

@@ -8,6 +8,7 @@ import type { SkyPosition } from '@/lib/science/sky/separation'
 import { pixelScaleArcsec, pixelToSky, readWcs, WcsError, type Wcs } from '@/lib/science/sky/wcs'
 import { bandsOfFile, type BandPlace } from '@/lib/work/intake/bands-of-file'
 import { LOST, type Refusal } from '@/lib/work/intake/refusals'
+import { planeOrientation } from './candidate-geometry'
 import type { FileToRead, HeldPlane, PlaneRead, StoredFile } from './worker-tasks'
 
 /** One band's pixels with what is known of them. */
@@ -96,6 +97,8 @@ export const bandPlane = ({ plane, data }: Cutout): BandPlane => ({
   width: plane.width,
   height: plane.height,
   data,
+  pixelScaleArcsec: plane.pixelScaleArcsec,
+  orientation: planeOrientation(plane.wcs),
 })
 
 /** Pixels of a plane that was read before; null when its file can no longer be read or has changed its shape. */
