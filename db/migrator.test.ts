@@ -1,7 +1,8 @@
-import { sql } from 'kysely'
+import { Migrator, sql } from 'kysely'
 import { describe, expect, it } from 'vitest'
 import { openDatabase, openMemoryDatabase } from './connection'
 import { migrateToLatest, migrateToNothing } from './migrator'
+import { migrations } from '@/migrations'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
 
 describe('migrations', () => {
@@ -81,6 +82,42 @@ describe('tables that only grow', () => {
     )
     await grade('four', graders[0].id, first.id)
     await expect(grade('five', graders[0].id, first.id)).rejects.toThrow(/UNIQUE/)
+    await db.destroy()
+  })
+})
+
+describe('002, archives and batches', () => {
+  it('keeps every row and reference of an installation that has delivered files, forth and back', async () => {
+    const db = openDatabase(':memory:')
+    const migrate = new Migrator({ db, provider: { getMigrations: async () => migrations } })
+    await migrate.migrateTo('001-main-path')
+    const person = "(1, 'avocet@saltmarsh.test', 'avocet', null, 1, 1, '2026', null)"
+    for (const statement of [
+      `insert into person values ${person}`,
+      `insert into campaign (id, slug, name, survey, acronym, bands, created_by, created_at)
+        values (1, 'north', 'North', 'SWS', 'SWS', '["g"]', 1, '2026')`,
+      "insert into batch values (1, 1, 'Night 1', 1, '2026')",
+      ...[2, 1].map(
+        (id) => `insert into file values
+          (${id}, 1, 1, 'SWS1_g.fits', 'fits', 'hash ${id}', 9, 'imaged', null, null, null, ${id === 1 ? 2 : 'null'}, 1, '2026', '2026')`,
+      ),
+      "insert into candidate (id, campaign_id, name, state_since, created_at) values (1, 1, 'SWS1', '2026', '2026')",
+      "insert into plane (candidate_id, band, file_id, hdu, plane_index, width, height) values (1, 'g', 2, 0, 0, 9, 9)",
+    ]) {
+      await sql.raw(statement).execute(db)
+    }
+    const rows = async () =>
+      (await sql<object>`select id, name, sha256, fate, replaced_by from file order by id`.execute(db)).rows
+    const before = await rows()
+    expect((await migrate.migrateTo('002-archives-and-batches')).error).toBeUndefined()
+    expect(await rows()).toEqual(before)
+    expect((await sql`select state from batch`.execute(db)).rows).toEqual([{ state: 'open' }])
+    expect((await sql`pragma foreign_keys`.execute(db)).rows).toEqual([{ foreign_keys: 1 }])
+    await expect(sql`delete from file where id = 2`.execute(db)).rejects.toThrow(/FOREIGN KEY/)
+    await sql`insert into file (campaign_id, batch_id, name, kind, sha256, bytes, fate, created_by, created_at, updated_at)
+      values (1, 1, 'n.zip', 'archive', 'z', 1, 'read', 1, '2026', '2026')`.execute(db)
+    expect((await migrate.migrateTo('001-main-path')).error).toBeUndefined()
+    expect(await rows()).toEqual(before)
     await db.destroy()
   })
 })

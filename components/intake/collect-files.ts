@@ -1,3 +1,5 @@
+import { isHiddenName } from '@/lib/work/intake/file-name'
+
 /** What was dropped or chosen, folders opened. Names are paths below what was dropped, as the server keeps them. */
 export interface ChosenFile {
   name: string
@@ -10,13 +12,11 @@ export interface Chosen {
   left: string[]
 }
 
-const HIDDEN = /(^|\/)(\.[^/]*|__MACOSX|Thumbs\.db|desktop\.ini)(\/|$)/i
-
 /** Manifests first, so that they are known when files are matched; then by name, so that a candidate's bands come together. */
 function inOrder(chosen: ChosenFile[], left: string[]): Chosen {
   const rank = ({ name }: ChosenFile) => (/\.csv$/i.test(name) ? 0 : 1)
-  const files = chosen.filter(({ name }) => !HIDDEN.test(name))
-  const hidden = chosen.flatMap(({ name }) => (HIDDEN.test(name) ? name : []))
+  const files = chosen.filter(({ name }) => !isHiddenName(name))
+  const hidden = chosen.flatMap(({ name }) => (isHiddenName(name) ? name : []))
   files.sort((a, b) => rank(a) - rank(b) || (a.name < b.name ? -1 : a.name > b.name ? 1 : 0))
   return { files, left: [...left, ...hidden] }
 }

@@ -13,7 +13,7 @@ export function WorkProgress({ summary }: { summary: IntakeSummary }) {
         <>
           <p role="status" className="text-small text-mute">
             {progress
-              ? `Reading and imaging: ${progress.done.toLocaleString('en')} of ${counted(progress.total, 'file')} done.`
+              ? `${progress.what === 'unpacking' ? 'Unpacking' : 'Reading and imaging'}: ${progress.done.toLocaleString('en')} of ${counted(progress.total, 'file')} done.`
               : stored > 0
                 ? `${counted(stored, 'file')} ${stored === 1 ? 'waits' : 'wait'} to be read.`
                 : 'Imaging.'}{' '}

@@ -94,6 +94,8 @@ export async function insertFile(
     reason: string | null
     duplicateOf: number | null
     personId: number
+    archiveId?: number | null
+    columns?: FileRow['columns']
     now: string
   },
 ): Promise<FileRow> {
@@ -114,6 +116,8 @@ export async function insertFile(
       created_by: file.personId,
       created_at: file.now,
       updated_at: file.now,
+      archive_id: file.archiveId ?? null,
+      columns: file.columns ?? null,
     })
     .returningAll()
     .executeTakeFirstOrThrow()
@@ -149,6 +153,10 @@ export async function setFileStored(db: Kysely<DB>, id: number, reason: string |
     .execute()
 }
 
+export async function setFileColumns(db: Kysely<DB>, id: number, columns: FileRow['columns']): Promise<void> {
+  await db.updateTable('file').set({ columns }).where('id', '=', id).execute()
+}
+
 /** What was a duplicate of files that are no longer in use stands for itself again. */
 export async function releaseDuplicates(db: Kysely<DB>, fileIds: readonly number[], now: string): Promise<void> {
   if (fileIds.length === 0) return
@@ -177,9 +185,12 @@ export async function setRefusedStored(
   return Number((await query.executeTakeFirst()).numUpdatedRows)
 }
 
-export type WaitingFile = Pick<FileRow, 'id' | 'name' | 'kind' | 'sha256' | 'bytes' | 'created_at'>
+export type WaitingFile = Pick<FileRow, 'id' | 'name' | 'kind' | 'sha256' | 'bytes' | 'created_at' | 'columns'>
 
-/** Files to be read, oldest first: not replaced, or replaced by one that was refused. */
+/** Files of a paused batch wait until it goes on. */
+const inOpenBatch = sql<SqlBool>`file.batch_id not in (select id from batch where state = 'paused')`
+
+/** Files to be read, oldest first: not replaced, or replaced by one that was refused; of no paused batch. */
 export async function listWaitingFiles(
   db: Kysely<DB>,
   campaignId: number,
@@ -189,11 +200,12 @@ export async function listWaitingFiles(
 ): Promise<WaitingFile[]> {
   return db
     .selectFrom('file')
-    .select(['id', 'name', 'kind', 'sha256', 'bytes', 'created_at'])
+    .select(['id', 'name', 'kind', 'sha256', 'bytes', 'created_at', 'columns'])
     .where('campaign_id', '=', campaignId)
     .where('fate', '=', 'stored')
     .where('kind', '=', kind)
     .where('id', '>', afterId)
+    .where(inOpenBatch)
     .where((e) =>
       e.or([
         e('replaced_by', 'is', null),
@@ -217,6 +229,8 @@ export async function countWaitingFiles(db: Kysely<DB>, campaignId: number): Pro
     .select((e) => e.fn.countAll<number>().as('n'))
     .where('campaign_id', '=', campaignId)
     .where('fate', '=', 'stored')
+    .where('kind', '!=', 'archive')
+    .where(inOpenBatch)
     .executeTakeFirstOrThrow()
   return row.n
 }
@@ -254,7 +268,7 @@ export async function setFileFates(
     .execute()
 }
 
-/** Of these files, the ones that are still to be read. */
+/** Of these files, the ones that are still to be read, paused or not. */
 export async function listStillWaiting(db: Kysely<DB>, ids: readonly number[]): Promise<Set<number>> {
   if (ids.length === 0) return new Set()
   const rows = await db.selectFrom('file').select('id').where('id', 'in', ids).where('fate', '=', 'stored').execute()

@@ -2,7 +2,15 @@ import type { CampaignTable, MembershipTable, RecipeTable, RuleTable } from './c
 import type { DesignationTable, EntryTable } from './catalogue'
 import type { RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
 import type { GradeTable, LeaseTable } from './grading'
-import type { BatchTable, CandidateTable, FileTable, ManifestRowTable, PlaneTable, StampTable } from './intake'
+import type {
+  BatchTable,
+  CandidateTable,
+  FileProblemTable,
+  FileTable,
+  ManifestRowTable,
+  PlaneTable,
+  StampTable,
+} from './intake'
 import type { InvitationTable, PersonTable } from './people'
 import type { AuditEventTable, JobTable, MailTable, SiteTable } from './platform'
 
@@ -16,6 +24,7 @@ export interface DB {
   recipe: RecipeTable
   batch: BatchTable
   file: FileTable
+  file_problem: FileProblemTable
   manifest_row: ManifestRowTable
   candidate: CandidateTable
   state_change: StateChangeTable

@@ -7,6 +7,8 @@ export interface BatchTable {
   name: string
   created_by: number
   created_at: IsoTime
+  /** Files of a paused batch are kept and not read. */
+  state: Generated<'open' | 'paused'>
 }
 export type Batch = Selectable<BatchTable>
 
@@ -18,7 +20,7 @@ export interface FileTable {
   batch_id: number
   /** The name it was delivered under, folders included. */
   name: string
-  kind: 'fits' | 'manifest'
+  kind: 'fits' | 'manifest' | 'archive'
   sha256: string
   bytes: number
   fate: FileFate
@@ -31,8 +33,20 @@ export interface FileTable {
   created_by: number
   created_at: IsoTime
   updated_at: IsoTime
+  /** The archive that it came out of. */
+  archive_id: number | null
+  /** Of a manifest: which of its headers stand for which columns, where a lead has chosen; null leaves it to their spelling. */
+  columns: Json<Record<string, string>> | null
 }
 export type FileRow = Selectable<FileTable>
+
+/** What is wrong with a part of a file: a line of a manifest, a member of an archive. */
+export interface FileProblemTable {
+  id: Generated<number>
+  file_id: number
+  line: number | null
+  sentence: string
+}
 
 export interface ManifestRowTable {
   id: Generated<number>

@@ -13,6 +13,7 @@ const Environment = z.object({
   RINGSIDE_WORKERS: z.coerce.number().int().min(1).max(64).optional(),
   RINGSIDE_LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
   RINGSIDE_MAX_FILE_MB: z.coerce.number().positive().max(4096).default(256),
+  RINGSIDE_MAX_ARCHIVE_MB: z.coerce.number().positive().max(65536).default(4096),
   PORT: z.coerce.number().int().min(1).max(65535).default(3000),
   NEXTAUTH_URL: optionalText.pipe(z.url().optional()),
   NEXTAUTH_SECRET: optionalText,
@@ -29,6 +30,7 @@ export interface Config {
   readonly workers: number | undefined
   readonly logLevel: string
   readonly maxFileBytes: number
+  readonly maxArchiveBytes: number
   readonly siteUrl: string
   readonly authSecret: string | undefined
   readonly smtpUrl: string | undefined
@@ -50,6 +52,7 @@ export function parseConfig(environment: Record<string, string | undefined>): Co
     workers: env.RINGSIDE_WORKERS,
     logLevel: env.RINGSIDE_LOG_LEVEL,
     maxFileBytes: env.RINGSIDE_MAX_FILE_MB * 1024 * 1024,
+    maxArchiveBytes: env.RINGSIDE_MAX_ARCHIVE_MB * 1024 * 1024,
     siteUrl: (env.NEXTAUTH_URL ?? `http://127.0.0.1:${env.PORT}`).replace(/\/$/, ''),
     authSecret: env.NEXTAUTH_SECRET,
     smtpUrl: env.SMTP_URL,

@@ -1,6 +1,7 @@
 /** The kinds of jobs, here so that a room can ask for work of a room below it without importing it. */
 export const JOB = {
   readFiles: 'read-files',
+  unpackArchives: 'unpack-archives',
   imageCandidates: 'image-candidates',
   consensus: 'consensus',
   sendMail: 'send-mail',

@@ -57,10 +57,11 @@ export async function runDueJobs(db: Kysely<DB>, handlers: JobHandlers, shouldSt
 }
 
 /**
- * Looks for due jobs for as long as the process lives. Two loops let a quick consensus pass a long imaging job. Returns a
+ * Looks for due jobs for as long as the process lives. Three loops let a quick consensus pass a long imaging job and a
+ * long unpacking. Returns a
  * function that stops it after the jobs in hand.
  */
-export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400, loops = 2): () => Promise<void> {
+export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400, loops = 3): () => Promise<void> {
   let stopped = false
   const loop = async () => {
     while (!stopped) {

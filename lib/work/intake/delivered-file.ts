@@ -4,7 +4,7 @@ import type { FileFate } from '@/db/schema/intake'
 export interface DeliveredFile {
   id: number
   name: string
-  kind: 'fits' | 'manifest'
+  kind: 'fits' | 'manifest' | 'archive'
   sha256: string
   bytes: number
   fate: FileFate
@@ -34,7 +34,7 @@ export interface IntakeSummary {
   /** Files or candidates are waiting for a job, or a job is at work. */
   working: boolean
   /** Of the job at work: files done of those it knows of. */
-  progress: { done: number; total: number } | null
+  progress: { what: 'unpacking' | 'reading'; done: number; total: number } | null
   /** Why work stands still, when a job failed. */
   fault: string | null
 }

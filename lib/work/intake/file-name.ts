@@ -41,6 +41,18 @@ export function fileNameOfPath(pathname: string): string {
 
 export const isManifestName = (name: string): boolean => /\.csv$/i.test(name)
 
+/** Also kinds of archives that are not opened, so that their refusal can say what to send instead. */
+export const isArchiveName = (name: string): boolean => /\.(zip|tar|tgz|tar\.\w{1,4}|tbz2?|txz|7z|rar)$/i.test(name)
+
+export type FileKind = 'fits' | 'manifest' | 'archive'
+
+export const kindOfName = (name: string): FileKind =>
+  isManifestName(name) ? 'manifest' : isArchiveName(name) ? 'archive' : 'fits'
+
+/** What operating systems put into folders and archives, and files that begin with a dot. */
+export const isHiddenName = (name: string): boolean =>
+  /(^|\/)(\.[^/]*|__MACOSX|Thumbs\.db|desktop\.ini)(\/|$)/i.test(name)
+
 /** Without the endings .fits .fit .fts .fz .gz, however many: `a/SWS1_g.fits.fz` is `a/SWS1_g`. */
 export function withoutEndings(name: string): string {
   let rest = name

@@ -113,7 +113,7 @@ export async function intakeSummary(db: Kysely<DB>, { campaign }: CampaignPermit
   const fates = await countFates(db, campaign.id)
   const counts = await countCandidates(db, campaign.id)
   const jobs = (await listCampaignJobs(db, campaign.id)).filter(
-    ({ kind }) => kind === JOB.readFiles || kind === JOB.imageCandidates,
+    ({ kind }) => kind === JOB.readFiles || kind === JOB.unpackArchives || kind === JOB.imageCandidates,
   )
   const unfinished = jobs.filter(({ state }) => state !== 'failed')
   const running = unfinished.find(({ state }) => state === 'running')
@@ -125,7 +125,14 @@ export async function intakeSummary(db: Kysely<DB>, { campaign }: CampaignPermit
     candidates: counts.candidates,
     candidatesImaged: counts.imaged,
     working: unfinished.length > 0,
-    progress: running && running.total > 0 ? { done: running.done, total: running.total } : null,
+    progress:
+      running && running.total > 0
+        ? {
+            what: running.kind === JOB.unpackArchives ? 'unpacking' : 'reading',
+            done: running.done,
+            total: running.total,
+          }
+        : null,
     fault: failed?.error ?? null,
   }
 }

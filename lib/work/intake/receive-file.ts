@@ -1,24 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import {
-  findFileByContent,
-  findFileInUse,
-  insertFile,
-  releaseDuplicates,
-  replaceOthersOfName,
-  setFileStored,
-} from '@/db/queries/intake'
 import type { DB } from '@/db/schema'
 import type { FileFate, FileRow } from '@/db/schema/intake'
 import { fromJson } from '@/db/schema/values'
-import { recordEvent } from '@/lib/platform/audit/record-event'
-import { isoTime } from '@/lib/platform/clock'
-import type { BlobStore, StoredBlob } from '@/lib/platform/storage/blob-store'
+import type { BlobStore } from '@/lib/platform/storage/blob-store'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { deliveryBatch } from './delivery-batch'
-import { isManifestName } from './file-name'
+import { kindOfName } from './file-name'
+import { keepFile } from './keep-file'
 import { nameMatcher } from './name-pattern'
-import { requestReading } from './request-reading'
 import { storeBody, type Body } from './store-body'
 
 export interface ReceivedFile {
@@ -33,27 +23,21 @@ export interface ReceivedFile {
   band: string | null
 }
 
-const IN_WORDS: Record<FileFate, string> = {
-  stored: 'waiting to be read',
-  read: 'read',
-  imaged: 'imaged',
-  duplicate: 'a duplicate itself',
-  refused: 'refused',
-}
-
-/**
- * Takes one delivered file. The bytes are on disk before the row is written, and reading them is asked for in the same
- * transaction. The same bytes under the same name change nothing; under another name they are a duplicate of the file in use;
- * other bytes under an old name replace that file once they are read.
- */
+/** Takes one delivered file. The bytes are on disk before the row is written. */
 export async function receiveFile(
   db: Kysely<DB>,
   permit: CampaignPermit<'lead'>,
   store: BlobStore,
-  input: { name: string; body: Body; batch?: string },
+  input: { name: string; body: Body; batch?: string; columns?: FileRow['columns'] },
 ): Promise<ReceivedFile> {
-  const blob = await storeBody(store, input.body)
-  const row = await db.transaction().execute((transaction) => keepRow(transaction, permit, input, blob))
+  const blob = await storeBody(store, input.body, kindOfName(input.name))
+  const delivery = {
+    campaignId: permit.campaign.id,
+    personId: permit.viewer.id,
+    batchId: (transaction: Kysely<DB>) => deliveryBatch(transaction, permit, input.batch),
+    columns: input.columns,
+  }
+  const row = await db.transaction().execute((transaction) => keepFile(transaction, delivery, input.name, blob))
   const match = row.kind === 'fits' ? matchOf(permit, row.name) : null
   return {
     id: row.id,
@@ -69,67 +53,3 @@ export async function receiveFile(
 
 const matchOf = ({ campaign }: CampaignPermit<'lead'>, name: string) =>
   nameMatcher(campaign.name_pattern, fromJson(campaign.bands)).match(name)
-
-async function keepRow(
-  db: Kysely<DB>,
-  permit: CampaignPermit<'lead'>,
-  input: { name: string; batch?: string },
-  blob: StoredBlob,
-): Promise<FileRow> {
-  const campaignId = permit.campaign.id
-  const same = await findFileByContent(db, campaignId, blob.sha256, input.name)
-  return same ? keepSame(db, permit, same) : keepNew(db, permit, input, blob)
-}
-
-async function keepSame(db: Kysely<DB>, permit: CampaignPermit<'lead'>, same: FileRow): Promise<FileRow> {
-  const now = isoTime()
-  if (same.replaced_by === null && same.fault !== 'lost') {
-    const why = same.reason ? `: ${same.reason}` : '.'
-    const reason = `'${same.name}' with the same bytes is here already and is ${IN_WORDS[same.fate]}${why}`
-    return { ...same, fate: 'duplicate', reason }
-  }
-  // An earlier version is wanted again, or bytes that the server had lost are back.
-  const reason = same.replaced_by === null ? null : 'An earlier version of this name, in use again.'
-  await setFileStored(db, same.id, reason, now)
-  await releaseDuplicates(db, await replaceOthersOfName(db, permit.campaign.id, same.name, same.id, now), now)
-  await requestReading(db, permit.campaign.id)
-  return { ...same, fate: 'stored', fault: null, reason, replaced_by: null }
-}
-
-async function keepNew(
-  db: Kysely<DB>,
-  permit: CampaignPermit<'lead'>,
-  input: { name: string; batch?: string },
-  blob: StoredBlob,
-): Promise<FileRow> {
-  const now = isoTime()
-  const campaignId = permit.campaign.id
-  const kind = isManifestName(input.name) ? 'manifest' : 'fits'
-  const twin = await findFileInUse(db, campaignId, blob.sha256, kind)
-  const row = await insertFile(db, {
-    campaignId,
-    batchId: await deliveryBatch(db, permit, input.batch),
-    name: input.name,
-    kind,
-    ...blob,
-    fate: twin ? 'duplicate' : 'stored',
-    reason: twin ? `The same bytes as '${twin.name}'.` : null,
-    duplicateOf: twin?.id ?? null,
-    personId: permit.viewer.id,
-    now,
-  })
-  if (twin) return row
-  const replaced = await replaceOthersOfName(db, campaignId, input.name, row.id, now)
-  await releaseDuplicates(db, replaced, now)
-  if (replaced.length > 0) {
-    await recordEvent(db, {
-      personId: permit.viewer.id,
-      campaignId,
-      action: 'intake.file-replaced',
-      subject: input.name,
-      detail: { file: row.id, replaced },
-    })
-  }
-  await requestReading(db, campaignId)
-  return row
-}

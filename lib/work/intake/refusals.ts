@@ -1,5 +1,10 @@
 /** Why a file that can be read is refused, as a stable word, and the sentence that says what was tried and what to do. */
-export type IntakeFault = 'no-band' | 'no-candidate' | 'band-taken' | 'no-columns' | 'lost' | 'reader-failed'
+export type IntakeFault =
+  'no-band' | 'no-candidate' | 'band-taken' | 'no-columns' | 'lost' | 'reader-failed' | 'cancelled' | ArchiveFault
+
+/** Why an archive, or some of it, is not taken. */
+export type ArchiveFault =
+  'not-an-archive' | 'unsafe-archive' | 'encrypted-archive' | 'archive-bomb' | 'damaged-archive'
 
 /** Faults that another manifest or another name pattern may cure. */
 export const CURABLE_FAULTS: readonly string[] = ['no-band', 'no-candidate', 'band-taken'] satisfies IntakeFault[]

@@ -19,3 +19,9 @@ export async function requestReading(db: Kysely<DB>, campaignId: number): Promis
   const uniqueKey = `${JOB.readFiles}:${campaignId}`
   await enqueueJob(db, { kind: JOB.readFiles, campaignId, uniqueKey, payload, delayMs: GATHER_MS })
 }
+
+/** Asks for the stored archives of a campaign to be unpacked. */
+export async function requestUnpacking(db: Kysely<DB>, campaignId: number): Promise<void> {
+  const uniqueKey = `${JOB.unpackArchives}:${campaignId}`
+  await enqueueJob(db, { kind: JOB.unpackArchives, campaignId, uniqueKey, payload: { campaignId } })
+}

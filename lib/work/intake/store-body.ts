@@ -1,5 +1,6 @@
 import { config } from '@/lib/platform/config/config'
 import { Problem } from '@/lib/platform/problems/problem'
+import type { FileKind } from './file-name'
 import type { BlobStore, StoredBlob } from '@/lib/platform/storage/blob-store'
 
 /** A request's body and the Content-Length that came with it. */
@@ -10,11 +11,11 @@ export interface Body {
 
 const megabytes = (bytes: number): string => `${Math.round(bytes / 1024 / 1024)} MiB`
 
-const tooLarge = (bytes: number, limit: number): Problem =>
+const tooLarge = (bytes: number, limit: number, setting: string): Problem =>
   new Problem(
     413,
     'file-too-large',
-    `The file has ${bytes} bytes; this site takes at most ${megabytes(limit)} a file (RINGSIDE_MAX_FILE_MB). Nothing was kept.`,
+    `The file has ${bytes} bytes; this site takes at most ${megabytes(limit)} (${setting}). Nothing was kept.`,
   )
 
 /**
@@ -22,8 +23,15 @@ const tooLarge = (bytes: number, limit: number): Problem =>
  * it is refused (411), chunked or not: then nothing would tell a whole file from one that a proxy cut short.
  * @throws Problem 400, 411, 413, 507; nothing is kept then.
  */
-export async function storeBody(store: BlobStore, { chunks, contentLength }: Body): Promise<StoredBlob> {
-  const limit = config().maxFileBytes
+export async function storeBody(
+  store: BlobStore,
+  { chunks, contentLength }: Body,
+  kind: FileKind = 'fits',
+): Promise<StoredBlob> {
+  const [limit, setting] =
+    kind === 'archive'
+      ? [config().maxArchiveBytes, 'RINGSIDE_MAX_ARCHIVE_MB']
+      : [config().maxFileBytes, 'RINGSIDE_MAX_FILE_MB']
   if (contentLength === null || !/^\d{1,15}$/.test(contentLength)) {
     throw new Problem(
       411,
@@ -32,7 +40,7 @@ export async function storeBody(store: BlobStore, { chunks, contentLength }: Bod
     )
   }
   const expected = Number(contentLength)
-  if (expected > limit) throw tooLarge(expected, limit)
+  if (expected > limit) throw tooLarge(expected, limit, setting)
   let received = 0
   try {
     return await store.putStream(whole(chunks, expected), (total) => {

@@ -6,7 +6,7 @@ import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { CURABLE_FAULTS } from './refusals'
-import { requestReading } from './request-reading'
+import { requestReading, requestUnpacking } from './request-reading'
 
 /** A lead has every refused file looked at again. Returns how many. */
 export async function tryRefusedAgain(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<number> {
@@ -21,6 +21,7 @@ export async function tryRefusedAgain(db: Kysely<DB>, permit: CampaignPermit<'le
       detail: { files },
     })
     await requestReading(transaction, campaignId)
+    await requestUnpacking(transaction, campaignId)
     return files
   })
 }

@@ -1,0 +1,112 @@
+import { sql, type Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { Batch, FileRow } from '../schema/intake'
+
+/** The oldest archive that waits to be unpacked, of no paused batch; of those after `afterId`. */
+export async function findWaitingArchive(db: Kysely<DB>, campaignId: number): Promise<FileRow | null> {
+  const row = await db
+    .selectFrom('file')
+    .innerJoin('batch', 'batch.id', 'file.batch_id')
+    .selectAll('file')
+    .where('file.campaign_id', '=', campaignId)
+    .where('file.kind', '=', 'archive')
+    .where('file.fate', '=', 'stored')
+    .where('file.replaced_by', 'is', null)
+    .where('batch.state', '=', 'open')
+    .orderBy('file.id')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+/** Whether an archive is still to be unpacked: not cancelled, replaced or paused meanwhile. */
+export async function isStillWaiting(db: Kysely<DB>, fileId: number): Promise<boolean> {
+  const row = await db
+    .selectFrom('file')
+    .innerJoin('batch', 'batch.id', 'file.batch_id')
+    .select('file.id')
+    .where('file.id', '=', fileId)
+    .where('file.fate', '=', 'stored')
+    .where('file.replaced_by', 'is', null)
+    .where('batch.state', '=', 'open')
+    .executeTakeFirst()
+  return row !== undefined
+}
+
+/** Names of what has come out of an archive already. */
+export async function listMemberNames(db: Kysely<DB>, archiveId: number): Promise<Set<string>> {
+  const rows = await db.selectFrom('file').select('name').where('archive_id', '=', archiveId).execute()
+  return new Set(rows.map(({ name }) => name))
+}
+
+export interface ListedBatch {
+  id: number
+  name: string
+  state: Batch['state']
+  files: number
+  /** Not yet read. */
+  waiting: number
+}
+
+/** The batches that have files to be read, and those that are paused. */
+export async function listUnfinishedBatches(db: Kysely<DB>, campaignId: number): Promise<ListedBatch[]> {
+  return db
+    .selectFrom('batch')
+    .leftJoin('file', (join) => join.onRef('file.batch_id', '=', 'batch.id'))
+    .select((e) => [
+      'batch.id',
+      'batch.name',
+      'batch.state',
+      e.fn.count<number>('file.id').as('files'),
+      sql<number>`count(case when file.fate = 'stored' then 1 end)`.as('waiting'),
+    ])
+    .where('batch.campaign_id', '=', campaignId)
+    .where((e) =>
+      e.or([
+        e('batch.state', '=', 'paused'),
+        e.exists(
+          e
+            .selectFrom('file as waiting')
+            .select('waiting.id')
+            .where('waiting.campaign_id', '=', campaignId)
+            .where('waiting.fate', '=', 'stored')
+            .whereRef('waiting.batch_id', '=', 'batch.id'),
+        ),
+      ]),
+    )
+    .groupBy('batch.id')
+    .orderBy('batch.id', 'desc')
+    .limit(20)
+    .execute()
+}
+
+export async function findBatch(db: Kysely<DB>, campaignId: number, id: number): Promise<Batch | null> {
+  const row = await db
+    .selectFrom('batch')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('id', '=', id)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export async function setBatchState(db: Kysely<DB>, id: number, state: Batch['state']): Promise<void> {
+  await db.updateTable('batch').set({ state }).where('id', '=', id).execute()
+}
+
+/** Every file of a batch that is still to be read is refused with this reason. Returns their ids. */
+export async function refuseWaitingOfBatch(
+  db: Kysely<DB>,
+  batchId: number,
+  to: { fault: string; reason: string },
+  now: string,
+): Promise<number[]> {
+  const rows = await db
+    .updateTable('file')
+    .set({ fate: 'refused', fault: to.fault, reason: to.reason, updated_at: now })
+    .where('batch_id', '=', batchId)
+    .where('fate', '=', 'stored')
+    .returning('id')
+    .execute()
+  return rows.map(({ id }) => id)
+}
