@@ -42,7 +42,28 @@ describe('a key at the bench', () => {
   it('shows views by digit, also on layouts whose digits are shifted', () => {
     expect(commandOf(press('3'), 'page', null)).toEqual({ do: 'view', index: 2 })
     expect(commandOf(press('"', { code: 'Digit3' }), 'page', null)).toEqual({ do: 'view', index: 2 })
-    expect(commandOf(press('0'), 'page', null)).toBeNull()
+  })
+
+  it('works Light, zoom and its way about, held down too where one goes on', () => {
+    const light = (key: string, more = {}) => commandOf(press(key, more), 'page', null)
+    expect(light('l')).toEqual({ do: 'light', light: 'toggle' })
+    expect(light('0')).toEqual({ do: 'light', light: 'reset' })
+    expect(light('i')).toEqual({ do: 'light', light: 'invert' })
+    expect(light('+', { shiftKey: true, repeat: true })).toEqual({ do: 'light', light: 'closer' })
+    expect(light('-', { repeat: true })).toEqual({ do: 'light', light: 'farther' })
+    expect(light('ArrowLeft', { shiftKey: true })).toEqual({ do: 'light', light: 'left' })
+    expect(light('ArrowLeft')).toEqual({ do: 'next view', step: -1 })
+    for (const modifier of ['ctrlKey', 'altKey', 'metaKey']) expect(light('0', { [modifier]: true })).toBeNull()
+    expect(light('i', { repeat: true })).toBeNull()
+  })
+
+  it('leaves its arrows to a focused slider, where letters still grade and digits still show views', () => {
+    for (const key of ['ArrowLeft', 'ArrowUp', 'Home', 'PageDown']) {
+      expect(commandOf(press(key), 'slider', null)).toBeNull()
+    }
+    expect(commandOf(press('a'), 'slider', null)).toEqual({ do: 'grade', letter: 'A' })
+    expect(commandOf(press('2'), 'slider', null)).toEqual({ do: 'view', index: 1 })
+    expect(commandOf(press('0'), 'slider', null)).toEqual({ do: 'light', light: 'reset' })
   })
 
   it('picks by digit while a chooser is open, where letters still grade', () => {

@@ -1,4 +1,5 @@
 /** What a key means at the bench. Single keys only, never with a modifier, never while typing. */
+import { LIGHT_KEYS, lightCommandOf, type LightCommand } from '@/components/light/light-keys'
 import type { GradeLetter } from '@/db/schema/grading'
 
 export type Command =
@@ -14,6 +15,7 @@ export type Command =
   | { do: 'keep' }
   | { do: 'blink' }
   | { do: 'help' }
+  | { do: 'light'; light: LightCommand }
 
 /** While a chooser is open digits pick from it; letters mean what they always mean, so no grade goes astray. */
 export type Chooser = 'tags' | 'reasons' | null
@@ -51,11 +53,25 @@ interface Pressed {
   isComposing: boolean
 }
 
-/** What has the focus: a text field takes every key; a button takes Space and Enter for itself. */
-export type FocusKind = 'text' | 'control' | 'page'
+/** What has the focus: a text field takes every key; a button takes Space and Enter for itself, a slider its arrows. */
+export type FocusKind = 'text' | 'control' | 'slider' | 'page'
+
+/** Keys that a focused slider takes for itself. */
+export const SLIDER_KEYS: readonly string[] = [
+  'ArrowLeft',
+  'ArrowRight',
+  'ArrowUp',
+  'ArrowDown',
+  'Home',
+  'End',
+  'PageUp',
+  'PageDown',
+]
 
 export function focusKind(target: EventTarget | null): FocusKind {
   if (!(target instanceof Element)) return 'page'
+  if (target.closest('input[type="range"]')) return 'slider'
+  if (target.closest('input[type="checkbox"]')) return 'control'
   if (target.closest('input, textarea, select, [contenteditable]:not([contenteditable="false"])')) return 'text'
   return target.closest('button, a[href], summary, [role="button"]') ? 'control' : 'page'
 }
@@ -66,7 +82,11 @@ function digitOf({ key, code }: Pressed): string | null {
 }
 
 export function commandOf(event: Pressed, focus: FocusKind, chooser: Chooser): Command | null {
-  if (focus === 'text' || event.repeat || event.isComposing) return null
+  if (focus === 'text' || event.isComposing) return null
+  if (focus === 'slider' && SLIDER_KEYS.includes(event.key)) return null
+  const light = lightCommandOf(event)
+  if (light && !(chooser && light === 'reset')) return { do: 'light', light }
+  if (event.repeat) return null
   if (event.ctrlKey || event.altKey || event.metaKey || (event.shiftKey && event.key !== '?')) return null
   if (focus === 'control' && (event.key === ' ' || event.key === 'Enter')) return null
   if (event.key === 'Escape' || event.key === 'Enter') return chooser ? { do: 'close' } : null
@@ -91,5 +111,6 @@ export const KEY_TABLE: { keys: string[]; does: string }[] = [
   { keys: ['M'], does: 'remark: Enter or Esc closes it, Shift+Enter starts a line' },
   { keys: ['Z'], does: 'undo: back to the one graded last, then further' },
   { keys: ['K'], does: 'keep the grade you look back at, and return' },
+  ...LIGHT_KEYS,
   { keys: ['H', '?'], does: 'this help' },
 ]

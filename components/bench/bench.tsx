@@ -1,5 +1,8 @@
 'use client'
 
+import { runLight } from '@/components/light/light-keys'
+import { LightSection } from '@/components/light/light-section'
+import { useLight } from '@/components/light/use-light'
 import { KeyCap } from '@/components/ui/key-cap'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
 import { BenchHeader } from './bench-header'
@@ -19,6 +22,7 @@ import { TagChooser } from './tag-chooser'
 import { useBench } from './use-bench'
 import { useBenchKeys } from './use-bench-keys'
 import { useKeySwitch } from './use-key-switch'
+import { useLightSupply } from './use-light-supply'
 
 export interface BenchProps {
   slug: string
@@ -33,10 +37,15 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
   const bench = useBench(slug, personId, first)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
   const { session, look, run } = bench
+  const light = useLight(personId, slug)
+  useLightSupply(light, look?.candidate.id ?? null, session.upcoming)
   useBenchKeys({
     on: keysOn,
     chooser: bench.chooser,
-    onCommand: run,
+    onCommand: (command) => {
+      if (command.do !== 'light') run(command)
+      else if (look && !bench.helpOpen) runLight(light, command.light)
+    },
     onBlinkEnd: () => bench.setBlinking(false),
   })
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
@@ -78,6 +87,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 key={look.candidate.id}
                 candidate={look.candidate}
                 shown={bench.shownView}
+                light={light}
                 onSeen={bench.markSeen}
                 onBlink={bench.setBlinking}
                 onSweep={(step) => run({ do: 'next view', step })}
@@ -103,6 +113,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 onOpen={() => run({ do: 'tags' })}
                 onToggle={bench.toggleTag}
               />
+              <LightSection light={light} keys={keysOn} />
             </>
           ) : null}
           <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />

@@ -1,6 +1,7 @@
 import { useState, type CSSProperties, type ReactNode } from 'react'
+import type { LightStore } from '@/components/light/light-store'
+import { LitBox } from '@/components/light/lit-box'
 import { Button } from '@/components/ui/button'
-import { StampOverlay } from '@/components/ui/stamp-overlay'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
 import { useHoldAndSwipe } from './use-hold-and-swipe'
 
@@ -19,12 +20,14 @@ const WIDTH = 'round(down, min(100cqw, 100cqh), var(--step))'
 export function Stage({
   candidate,
   shown,
+  light,
   onSeen,
   onBlink,
   onSweep,
 }: {
   candidate: BenchCandidate
   shown: string | null
+  light: LightStore
   /** A picture of this candidate is in sight. */
   onSeen: (candidateId: number) => void
   onBlink: (on: boolean) => void
@@ -41,32 +44,38 @@ export function Stage({
       <div className="grid min-h-0 flex-1 place-items-center px-2 [container-type:size] md:px-6">
         <div
           {...hold}
-          className="relative aspect-square w-[min(100cqw,100cqh)] touch-pan-y [--step:var(--whole)] [@media(min-resolution:2dppx)]:[--step:calc(var(--whole)/2)] select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
+          className="relative aspect-square w-[min(100cqw,100cqh)] [--step:var(--whole)] [@media(min-resolution:2dppx)]:[--step:calc(var(--whole)/2)] select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
           style={{ '--whole': `${growthStep(longest)}px`, width: WIDTH } as CSSProperties}
         >
-          {candidate.views.map(({ key, label, url, width, height }) =>
-            url ? (
-              <img
-                key={`${key} ${attempt}`}
-                ref={(image) => {
-                  if (image?.complete && image.naturalWidth > 0) onSeen(candidate.id)
-                }}
-                src={url}
-                alt={key === view?.key ? `${candidate.name}, ${label}` : ''}
-                aria-hidden={key !== view?.key}
-                width={width}
-                height={height}
-                decoding="sync"
-                draggable={false}
-                onLoad={() => onSeen(candidate.id)}
-                onError={() => setBroken((old) => [...old, url])}
-                className={`pixelated absolute inset-0 size-full object-contain ${key === view?.key && !missing ? '' : 'invisible'}`}
-              />
-            ) : null,
-          )}
-          {view?.url && !missing ? (
-            <StampOverlay width={view.width} height={view.height} geometry={candidate.geometry} />
-          ) : null}
+          <LitBox
+            light={light}
+            planesUrl={missing ? null : candidate.planesUrl}
+            view={view?.key ?? ''}
+            size={view?.url && !missing ? view : null}
+            geometry={candidate.geometry}
+            scrolls={false}
+          >
+            {candidate.views.map(({ key, label, url, width, height }) =>
+              url ? (
+                <img
+                  key={`${key} ${attempt}`}
+                  ref={(image) => {
+                    if (image?.complete && image.naturalWidth > 0) onSeen(candidate.id)
+                  }}
+                  src={url}
+                  alt={key === view?.key ? `${candidate.name}, ${label}` : ''}
+                  aria-hidden={key !== view?.key}
+                  width={width}
+                  height={height}
+                  decoding="sync"
+                  draggable={false}
+                  onLoad={() => onSeen(candidate.id)}
+                  onError={() => setBroken((old) => [...old, url])}
+                  className={`pixelated absolute inset-0 size-full object-contain ${key === view?.key && !missing ? '' : 'invisible'}`}
+                />
+              ) : null,
+            )}
+          </LitBox>
           {view?.url ? null : <Absent>There is no picture of this view.</Absent>}
           {missing ? (
             <Absent>

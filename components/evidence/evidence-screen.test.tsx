@@ -79,6 +79,7 @@ function show(
   render(
     <EvidenceScreen
       slug="north"
+      personId={7}
       evidence={{ ...EVIDENCE, judgement }}
       neighbours={neighbours}
       ruleAction={ruleAction}

@@ -1,9 +1,14 @@
 'use client'
 
 import Link from 'next/link'
-import { useState, type ReactNode } from 'react'
+import { useLayoutEffect, useState, type ReactNode } from 'react'
+import { useKeySwitch } from '@/components/bench/use-key-switch'
 import { counted, moment } from '@/components/campaigns/in-words'
+import { LIGHT_KEYS } from '@/components/light/light-keys'
+import { useLight } from '@/components/light/use-light'
+import { useLightKeys } from '@/components/light/use-light-keys'
 import type { FormAction } from '@/components/people/use-kept-form'
+import { KeyLine } from '@/components/splits/key-line'
 import { CopyText } from '@/components/table/copy-text'
 import { ButtonLink } from '@/components/ui/button'
 import { Notice, VisualGradeCaution } from '@/components/ui/notice'
@@ -18,6 +23,8 @@ import { RulingList, StateHistory } from './ruling-record'
 import { VerdictArithmetic } from './verdict-arithmetic'
 import { ViewsTray } from './views-tray'
 
+const EVIDENCE_KEYS = [...LIGHT_KEYS, { keys: ['X'], does: 'hold to blink against the view before' }]
+
 interface Neighbour {
   id: number
   name: string
@@ -25,6 +32,7 @@ interface Neighbour {
 
 export interface EvidenceScreenProps {
   slug: string
+  personId: number
   evidence: CandidateEvidence
   neighbours: { previous: Neighbour | null; next: Neighbour | null }
   /** For leads: rules on this candidate. */
@@ -41,8 +49,13 @@ function Section({ title, children }: { title: string; children: ReactNode }) {
 }
 
 /** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
-export function EvidenceScreen({ slug, evidence, neighbours, ruleAction }: EvidenceScreenProps) {
+export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleAction }: EvidenceScreenProps) {
   const [view, setView] = useState(0)
+  const [blinking, setBlinking] = useState(false)
+  const [keysOn, setKeysOn] = useKeySwitch(personId)
+  const light = useLight(personId, slug)
+  useLayoutEffect(() => light.show(evidence.id), [light, evidence.id])
+  useLightKeys(keysOn, light, setBlinking)
   const { judgement } = evidence
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-6 px-4 py-5 md:px-8 md:py-6">
@@ -68,7 +81,19 @@ export function EvidenceScreen({ slug, evidence, neighbours, ruleAction }: Evide
       </header>
       <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_22rem]">
         <div className="flex min-w-0 flex-col gap-6">
-          <ViewsTray name={evidence.name} pictures={evidence.pictures} chosen={view} onChoose={setView} keys={false} />
+          <div>
+            <ViewsTray
+              name={evidence.name}
+              pictures={evidence.pictures}
+              chosen={view}
+              onChoose={setView}
+              keys={keysOn}
+              viewKeys={false}
+              light={light}
+              blinking={blinking}
+            />
+            <KeyLine on={keysOn} onSwitch={setKeysOn} keys={EVIDENCE_KEYS} />
+          </div>
           <CandidateFacts evidence={evidence} />
         </div>
         <div className="flex min-w-0 flex-col gap-7">

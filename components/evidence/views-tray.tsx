@@ -1,4 +1,10 @@
-import type { CSSProperties } from 'react'
+'use client'
+
+import { useState, type CSSProperties } from 'react'
+import { useHoldAndSwipe } from '@/components/bench/use-hold-and-swipe'
+import { LightSection } from '@/components/light/light-section'
+import type { LightStore } from '@/components/light/light-store'
+import { LitBox } from '@/components/light/lit-box'
 import { StampFigure } from '@/components/ui/stamp-figure'
 import type { CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 
@@ -12,16 +18,29 @@ export function ViewsTray({
   chosen,
   onChoose,
   keys,
+  viewKeys,
+  light,
+  blinking,
 }: {
   name: string
   pictures: CandidatePictures
   chosen: number
   onChoose: (index: number) => void
-  /** Whether number keys work here, so that slides show theirs. */
+  /** Whether single keys work, so that what has one shows it. */
   keys: boolean
+  /** Whether number keys choose views here. */
+  viewKeys: boolean
+  light: LightStore
+  /** A key is held that shows the view before. */
+  blinking: boolean
 }) {
   const { views, geometry } = pictures
-  const view = views[chosen] ?? views[0]
+  const [held, setHeld] = useState(false)
+  const [before, setBefore] = useState({ chosen, previous: chosen })
+  if (before.chosen !== chosen) setBefore({ chosen, previous: before.chosen })
+  const hold = useHoldAndSwipe(setHeld, (step) => onChoose((chosen + step + views.length) % views.length))
+  const shown = blinking || held ? before.previous : chosen
+  const view = views[shown] ?? views[0]
   if (!view)
     return <div className="night grid aspect-square place-items-center rounded-tray bg-tray text-mute">No views</div>
   return (
@@ -31,13 +50,24 @@ export function ViewsTray({
         className="night grid gap-2 rounded-tray bg-tray p-2 text-text sm:grid-cols-[minmax(0,1fr)_var(--slide)]"
       >
         <div className="min-w-0">
-          <StampFigure
-            src={view.url}
-            alt={`${view.label} of ${name}`}
-            width={view.width}
-            height={view.height}
-            geometry={geometry}
-          />
+          <div {...hold} className="relative aspect-square select-none overflow-hidden bg-black">
+            <LitBox
+              light={light}
+              planesUrl={view.url ? pictures.planesUrl : null}
+              view={view.key}
+              size={view.url ? view : null}
+              geometry={geometry}
+              scrolls
+            >
+              <StampFigure
+                src={view.url}
+                alt={`${view.label} of ${name}`}
+                width={view.width}
+                height={view.height}
+                geometry={null}
+              />
+            </LitBox>
+          </div>
           <figcaption className="px-0.5 pt-1.5 text-note text-tray-text">
             {view.label}
             {view.note ? <span className="text-text">. {view.note}</span> : null}
@@ -65,7 +95,7 @@ export function ViewsTray({
                   className="[&>p]:p-0 [&>p]:text-[0.625rem] [&>p]:leading-tight"
                 />
                 <span className="block truncate px-0.5 pt-0.5 text-left text-[0.6875rem] leading-4 text-tray-text">
-                  {keys && index < 9 ? (
+                  {keys && viewKeys && index < 9 ? (
                     <kbd aria-hidden="true" className="figures mr-1 hidden font-semibold text-text lg:inline">
                       {index + 1}
                     </kbd>
@@ -76,6 +106,7 @@ export function ViewsTray({
             </li>
           ))}
         </ol>
+        <LightSection light={light} keys={keys} className="px-1 sm:col-span-2" />
       </figure>
     </div>
   )

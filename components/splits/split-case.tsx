@@ -9,6 +9,7 @@ import { arithmeticInWords, thresholdsInWords } from '@/components/evidence/verd
 import { RulingForm } from '@/components/evidence/ruling-form'
 import { RulingList } from '@/components/evidence/ruling-record'
 import { ViewsTray } from '@/components/evidence/views-tray'
+import type { LightStore } from '@/components/light/light-store'
 import type { FormAction } from '@/components/people/use-kept-form'
 import { Notice } from '@/components/ui/notice'
 import { StatePill } from '@/components/ui/state-pill'
@@ -22,6 +23,8 @@ export interface CaseControls {
   onChoose: (choice: RulingChoice) => void
   reasonRef: RefObject<HTMLTextAreaElement | null>
   keys: boolean
+  light: LightStore
+  blinking: boolean
 }
 
 /** One case: everything needed to rule on it in one place, and the ruling at the bottom. */
@@ -71,6 +74,9 @@ export function SplitCase({
                 chosen={controls.view}
                 onChoose={controls.onView}
                 keys={controls.keys}
+                viewKeys
+                light={controls.light}
+                blinking={controls.blinking}
               />
             </div>
             <div className="flex max-w-prose flex-col gap-1.5 text-small text-mute">

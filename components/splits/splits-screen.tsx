@@ -2,8 +2,10 @@
 
 import Link from 'next/link'
 import { useRouter } from 'next/navigation'
-import { startTransition, useOptimistic, useRef, useState } from 'react'
+import { startTransition, useLayoutEffect, useOptimistic, useRef, useState } from 'react'
 import { useKeySwitch } from '@/components/bench/use-key-switch'
+import { useLight } from '@/components/light/use-light'
+import { useLightKeys } from '@/components/light/use-light-keys'
 import { counted } from '@/components/campaigns/in-words'
 import type { FormAction } from '@/components/people/use-kept-form'
 import { ButtonLink } from '@/components/ui/button'
@@ -70,6 +72,10 @@ export function SplitsScreen(props: SplitsScreenProps) {
     setNow({ ...now, choice })
     reasonRef.current?.focus()
   }
+  const light = useLight(props.personId, slug)
+  const [blinking, setBlinking] = useState(false)
+  useLayoutEffect(() => light.show(id), [light, id])
+  useLightKeys(keysOn && evidence !== null, light, setBlinking)
   useSplitKeys(keysOn, (command) => {
     if (command.do === 'move') move(command.step)
     if (command.do === 'view' && command.index < views) setNow({ ...now, view: command.index })
@@ -124,6 +130,8 @@ export function SplitsScreen(props: SplitsScreenProps) {
                   onChoose: choose,
                   reasonRef,
                   keys: keysOn,
+                  light,
+                  blinking,
                 }}
               />
             </div>

@@ -1,13 +1,14 @@
 'use client'
 
 import { useEffect, useEffectEvent } from 'react'
-import { focusKind } from '@/components/bench/bench-keys'
+import { focusKind, SLIDER_KEYS } from '@/components/bench/bench-keys'
 import { splitCommand, type SplitCommand } from './split-keys'
 
 /** Listens on the window while `on`; never while somebody types, and never in place of a button's own key. */
 export function useSplitKeys(on: boolean, onCommand: (command: SplitCommand) => void): void {
   const pressed = useEffectEvent((event: KeyboardEvent) => {
     if (event.defaultPrevented || isTyping(event.target)) return
+    if (focusKind(event.target) === 'slider' && SLIDER_KEYS.includes(event.key)) return
     const command = splitCommand(event)
     if (!command) return
     event.preventDefault()

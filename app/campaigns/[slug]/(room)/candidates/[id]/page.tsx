@@ -23,6 +23,7 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
     <EvidenceScreen
       key={id}
       slug={slug}
+      personId={permit.viewer.id}
       evidence={evidence}
       neighbours={await neighboursOf(db, permit, id)}
       ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}

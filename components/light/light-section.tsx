@@ -1,0 +1,63 @@
+'use client'
+
+import { lazy, Suspense } from 'react'
+import { letGo } from '@/components/bench/let-go'
+import { KeyCap } from '@/components/ui/key-cap'
+import type { LightStore } from './light-store'
+import { useLightFact, useZoomScale } from './use-light'
+
+const LightPanel = lazy(() => import('./light-panel'))
+
+/** The head of Light, always there; its panel comes when it is opened. */
+export function LightSection({
+  light,
+  keys,
+  className = '',
+}: {
+  light: LightStore
+  keys: boolean
+  className?: string
+}) {
+  const open = useLightFact(light, (now) => now.open)
+  const touched = useLightFact(light, (now) => now.touched)
+  const zoomed = useZoomScale(light) > 1
+  return (
+    <section aria-label="Light" className={`@container flex flex-col gap-1.5 ${className}`}>
+      <div className="flex min-h-9 items-center justify-between gap-3 md:min-h-6">
+        <button
+          type="button"
+          aria-expanded={open}
+          onClick={letGo(() => light.setOpen(!open))}
+          className="flex min-h-9 items-center gap-2 text-note font-semibold text-mute hover:text-text md:min-h-6"
+        >
+          {keys ? (
+            <span className="hidden md:inline">
+              <KeyCap>L</KeyCap>
+            </span>
+          ) : null}
+          Light
+          {touched ? <span className="font-normal text-text">changed</span> : null}
+        </button>
+        {touched || zoomed ? (
+          <button
+            type="button"
+            onClick={letGo(() => light.reset())}
+            className="flex min-h-9 items-center gap-2 text-note text-mute hover:text-text md:min-h-6"
+          >
+            {keys ? (
+              <span className="hidden md:inline">
+                <KeyCap>0</KeyCap>
+              </span>
+            ) : null}
+            Reset
+          </button>
+        ) : null}
+      </div>
+      {open ? (
+        <Suspense fallback={<p className="text-note text-mute">Opening …</p>}>
+          <LightPanel light={light} />
+        </Suspense>
+      ) : null}
+    </section>
+  )
+}

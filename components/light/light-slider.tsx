@@ -1,0 +1,61 @@
+'use client'
+
+import { useEffect, useId, useRef } from 'react'
+import type { LightStore } from './light-store'
+import { STEPS, type SliderScale } from './slider-scales'
+
+/**
+ * A slider that writes into Light and follows it without being rendered: place and figure are set on the elements themselves.
+ * Arrow keys and all other keys of a slider are the browser's own.
+ */
+export function LightSlider({
+  light,
+  label,
+  scale,
+  read,
+  write,
+}: {
+  light: LightStore
+  label: string
+  scale: SliderScale
+  /** null: nothing to set now. */
+  read: (light: LightStore) => number | null
+  write: (light: LightStore, value: number) => void
+}) {
+  const id = useId()
+  const input = useRef<HTMLInputElement>(null)
+  const figure = useRef<HTMLOutputElement>(null)
+  useEffect(() => {
+    const follow = () => {
+      if (!input.current || !figure.current) return
+      const value = read(light)
+      const text = value === null ? '' : scale.figure(value)
+      if (figure.current.textContent === text) return
+      figure.current.textContent = text
+      input.current.disabled = value === null
+      if (value === null) return
+      input.current.value = String(scale.place(value))
+      input.current.setAttribute('aria-valuetext', text)
+    }
+    follow()
+    return light.subscribe(follow)
+  }, [light, scale, read])
+  return (
+    <div className="grid grid-cols-[5rem_minmax(0,1fr)_3.5rem] items-center gap-2">
+      <label htmlFor={id} className="truncate text-small">
+        {label}
+      </label>
+      <input
+        ref={input}
+        id={id}
+        type="range"
+        min={0}
+        max={STEPS}
+        defaultValue={0}
+        onInput={(event) => write(light, scale.value(Number(event.currentTarget.value)))}
+        className="h-8 w-full touch-pan-y accent-text disabled:opacity-40 md:h-6"
+      />
+      <output ref={figure} htmlFor={id} className="figures text-right text-note text-mute" />
+    </div>
+  )
+}
