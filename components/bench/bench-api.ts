@@ -10,6 +10,8 @@ export interface GradeBody {
   view: string | null
   seconds: number
   reason: string | null
+  /** Version of the recipe of the pictures that were judged. */
+  recipe?: number | null
 }
 
 export type SendOutcome =

@@ -71,7 +71,16 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
       name: candidate.name,
       first: isFirst,
       at: Date.now(),
-      body: { id: makeUid(), grade, tags, remark: answer.remark.trim() || null, view, seconds: spent, reason },
+      body: {
+        id: makeUid(),
+        grade,
+        tags,
+        remark: answer.remark.trim() || null,
+        view,
+        seconds: spent,
+        reason,
+        recipe: candidate.recipe,
+      },
     })
   }
 

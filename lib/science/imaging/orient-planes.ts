@@ -33,10 +33,7 @@ export function orientPlanes(planes: BandPlane[], asked: boolean): OrientedPlane
  * @param known of each band, null where its header does not say.
  * @returns null when no band's is known.
  */
-export function shownOrientation(
-  known: readonly (PlaneOrientation | null)[],
-  asked: boolean,
-): PlaneOrientation | null {
+export function shownOrientation(known: readonly (PlaneOrientation | null)[], asked: boolean): PlaneOrientation | null {
   const first = known.find((orientation) => orientation !== null)
   if (!first) return null
   return isTurned(known, asked) ? NORTH_UP : first

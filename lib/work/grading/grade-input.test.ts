@@ -10,6 +10,7 @@ describe('a grade as it arrives', () => {
       view: null,
       seconds: null,
       reason: null,
+      recipe: null,
     })
   })
 

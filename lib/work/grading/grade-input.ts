@@ -28,6 +28,13 @@ export const GradeInput = z
       .max(40)
       .nullish()
       .transform((key) => key ?? null),
+    /** Version of the recipe of the pictures that were judged, as the queue told it. */
+    recipe: z
+      .number('The recipe is the number of its version.')
+      .int('The recipe is the number of its version.')
+      .min(1, 'Versions of a recipe count from 1.')
+      .nullish()
+      .transform((version) => version ?? null),
     seconds: z
       .number('The time taken is a number of seconds.')
       .min(0, 'The time taken is not negative.')

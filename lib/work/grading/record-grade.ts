@@ -11,13 +11,14 @@ import {
   setFirstGradeGiven,
   type CandidateToGrade,
 } from '@/db/queries/grading'
+import { findRecipe, findRecipeOfStamps } from '@/db/queries/recipes'
 import type { DB } from '@/db/schema'
 import type { GradeLetter, GradeRow } from '@/db/schema/grading'
 import { fromJson, toJson, type IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
-import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { conflict, invalid, notFound } from '@/lib/platform/problems/problem'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { queueProgress, type QueueProgress } from '@/lib/work/queue/queue-progress'
@@ -50,7 +51,7 @@ const CONSENSUS_DELAY_MS = 2000
  *
  * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
  * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
- * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`.
+ * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`, 422 no such recipe.
  */
 export async function recordGrade(
   db: Kysely<DB>,
@@ -80,7 +81,7 @@ export async function recordGrade(
       tags: toJson<string[]>(input.tags),
       reason: input.reason,
       remark: input.remark,
-      recipe_id: (await requireRecipe(transaction, campaign.id)).id,
+      recipe_id: await recipeSeen(transaction, campaign.id, candidateId, input.recipe),
       view: input.view,
       seconds: input.seconds,
       replaces: standing?.id ?? null,
@@ -95,6 +96,25 @@ export async function recordGrade(
     ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
     ...(await queueProgress(db, permit)),
   }
+}
+
+/**
+ * The recipe of the pictures that were judged: the one that is named, else that of the candidate's newest pictures. While a
+ * changed recipe is worked through, that is not always the one in force.
+ */
+async function recipeSeen(
+  transaction: Transaction<DB>,
+  campaignId: number,
+  candidateId: number,
+  version: number | null,
+): Promise<number> {
+  if (version !== null) {
+    const named = await findRecipe(transaction, campaignId, version)
+    if (named) return named.id
+    const reason = `This campaign's recipe has no version ${version}. Send the number that came with the pictures, or none.`
+    throw invalid(reason, [{ name: 'recipe', reason }])
+  }
+  return (await findRecipeOfStamps(transaction, candidateId)) ?? (await requireRecipe(transaction, campaignId)).id
 }
 
 /** Whether this id, or else this content, has been recorded as a grade of this person and candidate. */

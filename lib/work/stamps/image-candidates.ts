@@ -1,7 +1,9 @@
 import 'server-only'
+import { requireRecipe } from '@/db/queries/campaigns'
 import { listHeldPlanes } from '@/db/queries/cutouts'
+import { countImagedBy } from '@/db/queries/recipes'
 import { listCandidatesById, listCandidatesToImage } from '@/db/queries/stamps'
-import { groupBy } from '@/lib/work/intake/read-manifest'
+import { groupBy } from '@/lib/work/intake/group-by'
 import { campaignWork, type ImagingTools } from './campaign-work'
 import type { ImageCandidatesPayload } from './commit-outcomes'
 import { heldPlane } from './plan-imaging'
@@ -23,6 +25,9 @@ export async function imageCandidates(
   const { db } = tools
   const work = await campaignWork(db, campaignId)
   let done = 0
+  const { candidates: all, imaged } = await countImagedBy(db, campaignId, work.recipeId)
+  const total = candidateIds?.length ?? all - imaged
+  await progress(0, total)
   for (let afterId = 0; ;) {
     const candidates = candidateIds
       ? await listCandidatesById(db, campaignId, candidateIds)
@@ -36,9 +41,13 @@ export async function imageCandidates(
       bytes: rows.length * USUAL_PLANE_BYTES,
       candidate: { name, files: [], held: rows.map((row) => heldPlane(tools, row)), manifestPosition: null },
     }))
-    await runImaging(tools, work, planned, async () => {}, true)
-    done += candidates.length
-    await progress(done, done)
+    const tell = async (_files: number, committed: number) => {
+      done += committed
+      await progress(done, Math.max(done, total))
+    }
+    await runImaging(tools, work, planned, tell, true)
     if (candidateIds) return
+    // A change of the recipe has asked for a job of its own, which makes all pictures by it.
+    if ((await requireRecipe(db, campaignId)).id !== work.recipeId) return
   }
 }

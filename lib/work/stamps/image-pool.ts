@@ -3,7 +3,7 @@ import { availableParallelism } from 'node:os'
 import path from 'node:path'
 import { Piscina } from 'piscina'
 import { config } from '@/lib/platform/config/config'
-import type { ImageRunner, PlanesRunner } from './worker-tasks'
+import type { ImageRunner, PlanesRunner, PreviewRunner } from './worker-tasks'
 
 /** On globalThis because route handlers and instrumentation are bundled apart but share one process. */
 const shared = globalThis as typeof globalThis & { ringsideImagePool?: Piscina }
@@ -23,10 +23,11 @@ function pool(): Piscina {
 }
 
 /** Work in threads of this process, so that reading and drawing never hold up a request. */
-export const imagePool: ImageRunner & PlanesRunner = {
+export const imagePool: ImageRunner & PlanesRunner & PreviewRunner = {
   image: (task) => pool().run(task, { name: 'image' }),
   probe: (task) => pool().run(task, { name: 'probe' }),
-  manifest: (file) => pool().run(file, { name: 'manifest' }),
+  manifest: (task) => pool().run(task, { name: 'manifest' }),
+  preview: (task) => pool().run(task, { name: 'preview' }),
   planes: (task) => pool().run(task, { name: 'planes' }),
 }
 

@@ -7,14 +7,18 @@ import { bandsOfFile } from '@/lib/work/intake/bands-of-file'
 import { candidateOfHeaders } from '@/lib/work/intake/candidate-of-header'
 import { parseManifest, type ParsedManifest } from '@/lib/work/intake/parse-manifest'
 import { codePlanes } from './code-planes'
+import { drawPreview } from './draw-stamps'
 import { imageCandidate } from './image-candidate'
 import { openFits } from './read-cutout'
 import type {
   CandidateOutcome,
   FileProbe,
   ImageTask,
+  ManifestTask,
   PlanesMade,
   PlanesTask,
+  PreviewMade,
+  PreviewTask,
   ProbeTask,
   StoredFile,
 } from './worker-tasks'
@@ -37,6 +41,8 @@ export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
 
 export const planes = (task: PlanesTask): Promise<PlanesMade> => codePlanes(task)
 
+export const preview = (task: PreviewTask): Promise<PreviewMade> => drawPreview(task)
+
 export async function probe({ files, bands }: ProbeTask): Promise<FileProbe[]> {
   const probes: FileProbe[] = []
   for (const file of files) probes.push(await probeFile(file, bands))
@@ -56,6 +62,6 @@ async function probeFile(file: StoredFile, bands: string[]): Promise<FileProbe> 
   }
 }
 
-export async function manifest(path: string): Promise<ParsedManifest> {
-  return parseManifest(readFileSync(path))
+export async function manifest({ path, columns }: ManifestTask): Promise<ParsedManifest> {
+  return parseManifest(readFileSync(path), columns === null ? {} : (JSON.parse(columns) as Record<string, string>))
 }

@@ -5,7 +5,7 @@ import type { ManifestRow } from '@/db/schema/intake'
 import { baseName } from '@/lib/work/intake/file-name'
 import { manifestFacts } from '@/lib/work/intake/manifest-facts'
 import { rowsOfFile } from '@/lib/work/intake/match-name'
-import { groupBy } from '@/lib/work/intake/read-manifest'
+import { groupBy } from '@/lib/work/intake/group-by'
 import type { CampaignWork, ImagingTools } from './campaign-work'
 import type { ToImage } from './run-imaging'
 import type { MatchedFile } from './waiting-candidates'
@@ -55,9 +55,9 @@ async function manifestRowsOfHeld(
   return (fileName) => rowsOfFile(fileName, byBase.get(baseName(fileName).toLowerCase()) ?? [])
 }
 
-export function heldPlane(tools: ImagingTools, row: HeldPlaneRow): HeldPlane {
+export function heldPlane({ blobs }: Pick<ImagingTools, 'blobs'>, row: HeldPlaneRow): HeldPlane {
   const { band, hdu, planeIndex, fileId, fileName, sha256 } = row
-  return { band, hdu, planeIndex, file: { id: fileId, name: fileName, sha256, path: tools.blobs.pathOf(sha256) } }
+  return { band, hdu, planeIndex, file: { id: fileId, name: fileName, sha256, path: blobs.pathOf(sha256) } }
 }
 
 function toImage(tools: ImagingTools, group: MatchedFile[], held: HeldPlaneRow[], rows: ManifestRow[]): ToImage {

@@ -36,12 +36,12 @@ export function tasksOf(work: readonly ToImage[], workers: number): ToImage[][] 
   return tasks
 }
 
-/** Images candidates on all threads and commits each task as it comes back. `onCommitted` hears how many files were settled. */
+/** Images candidates on all threads and commits each task as it comes back. `onCommitted` hears how many files were settled and candidates done. */
 export async function runImaging(
   tools: ImagingTools,
   work: CampaignWork,
   candidates: readonly ToImage[],
-  onCommitted: (files: number) => Promise<void>,
+  onCommitted: (files: number, candidates: number) => Promise<void>,
   keepPositions = false,
 ): Promise<void> {
   const tasks = tasksOf(candidates, tools.workers)
@@ -57,7 +57,8 @@ export async function runImaging(
         ? outcomes.map((one) => ({ ...one, position: null, pixelScaleArcsec: null }))
         : outcomes
       await commitOutcomes(tools.db, work, kept, (name) => facts.get(name))
-      await onCommitted(task.reduce((sum, { candidate }) => sum + candidate.files.length, 0))
+      const files = task.reduce((sum, { candidate }) => sum + candidate.files.length, 0)
+      await onCommitted(files, task.length)
     }
   }
   // One lane more than threads, so that no thread waits for a commit.

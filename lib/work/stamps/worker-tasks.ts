@@ -112,9 +112,36 @@ export interface PlanesRunner {
   planes(task: PlanesTask): Promise<PlanesMade>
 }
 
+export interface PreviewTask {
+  /** In order of wavelength. */
+  planes: HeldPlane[]
+  recipe: Recipe
+}
+
+export interface ViewDrawn {
+  key: string
+  width: number
+  height: number
+  note: string | null
+  png: Uint8Array
+}
+
+/** The views that can be made, or the name of the file that can no longer be read. */
+export type PreviewMade = { views: ViewDrawn[] } | { lost: string }
+
+export interface PreviewRunner {
+  preview(task: PreviewTask): Promise<PreviewMade>
+}
+
+export interface ManifestTask {
+  path: string
+  /** JSON of the columns that a lead has chosen, or null. */
+  columns: string | null
+}
+
 /** Done by a pool of threads in the server, and directly in tests. */
 export interface ImageRunner {
   image(task: ImageTask): Promise<CandidateOutcome[]>
   probe(task: ProbeTask): Promise<FileProbe[]>
-  manifest(path: string): Promise<ParsedManifest>
+  manifest(task: ManifestTask): Promise<ParsedManifest>
 }
