@@ -33,8 +33,15 @@ export async function insertJob(db: Kysely<DB>, job: NewJob): Promise<boolean> {
   return Number(result.numInsertedOrUpdatedRows ?? 0) > 0
 }
 
-/** Takes the oldest job that is due, or one whose holder's lease ran out (a killed process), and leases it. One statement. */
-export async function claimJob(db: Kysely<DB>, now: string, leaseUntil: string): Promise<Job | null> {
+/**
+ * Takes the oldest job of these kinds that is due, or one whose holder's lease ran out (a killed process), and leases it. One
+ * statement.
+ */
+export async function claimJob(
+  db: Kysely<DB>,
+  claim: { kinds: readonly string[]; now: string; leaseUntil: string },
+): Promise<Job | null> {
+  const { kinds, now, leaseUntil } = claim
   const claimed = await db
     .updateTable('job')
     .set({ state: 'running', lease_until: leaseUntil, attempts: sql`attempts + 1`, updated_at: now })
@@ -42,6 +49,7 @@ export async function claimJob(db: Kysely<DB>, now: string, leaseUntil: string):
       query
         .selectFrom('job')
         .select('id')
+        .where('kind', 'in', kinds)
         .where((e) =>
           e.or([
             e.and([e('state', '=', 'queued'), e('run_after', '<=', now)]),
@@ -57,43 +65,62 @@ export async function claimJob(db: Kysely<DB>, now: string, leaseUntil: string):
   return claimed ?? null
 }
 
+/** A job in somebody's hands, known by the lease as the holder wrote it last. */
+export interface Claim {
+  id: number
+  leaseUntil: string
+}
+
+/** What a holder may write: nothing, once its lease ran out and another has taken the job. */
+function heldBy(db: Kysely<DB>, claim: Claim) {
+  return db
+    .updateTable('job')
+    .where('id', '=', claim.id)
+    .where('state', '=', 'running')
+    .where('lease_until', '=', claim.leaseUntil)
+}
+
+/** Renews the lease; getting on with the work takes back what attempts were counted. Returns false where it is no longer held. */
 export async function setJobProgress(
   db: Kysely<DB>,
-  id: number,
+  claim: Claim,
   progress: { done: number; total: number; leaseUntil: string; now: string },
-): Promise<void> {
-  await db
-    .updateTable('job')
+): Promise<boolean> {
+  const result = await heldBy(db, claim)
     .set({ done: progress.done, total: progress.total, lease_until: progress.leaseUntil, updated_at: progress.now })
-    .where('id', '=', id)
-    .execute()
+    .$if(progress.done > 0, (query) => query.set({ attempts: 0 }))
+    .executeTakeFirst()
+  return result.numUpdatedRows > 0n
 }
 
-export async function setJobDone(db: Kysely<DB>, id: number, now: string): Promise<void> {
-  await db
-    .updateTable('job')
-    .set({ state: 'done', lease_until: null, error: null, updated_at: now })
-    .where('id', '=', id)
-    .execute()
+export async function setJobDone(db: Kysely<DB>, claim: Claim, now: string): Promise<void> {
+  await heldBy(db, claim).set({ state: 'done', lease_until: null, error: null, updated_at: now }).execute()
 }
 
+/** After a failure. `runAfter` null gives the job up. */
 export async function setJobRetry(
   db: Kysely<DB>,
-  id: number,
-  retry: { error: string; runAfter: string | null; now: string },
+  claim: Claim,
+  retry: { attempts: number; error: string; runAfter: string | null; now: string },
 ): Promise<void> {
   // A retry gives up its unique key: a fresh job with that key may be queued meanwhile, and jobs are idempotent.
-  await db
-    .updateTable('job')
+  await heldBy(db, claim)
     .set({
       state: retry.runAfter ? 'queued' : 'failed',
+      attempts: retry.attempts,
       unique_key: null,
       lease_until: null,
       error: retry.error,
       run_after: retry.runAfter ?? retry.now,
       updated_at: retry.now,
     })
-    .where('id', '=', id)
+    .execute()
+}
+
+/** Gives a job back unfinished, to be taken at once by whoever comes: the process is being stopped. It is no attempt. */
+export async function giveBackJob(db: Kysely<DB>, claim: Claim, now: string): Promise<void> {
+  await heldBy(db, claim)
+    .set({ state: 'queued', attempts: 0, unique_key: null, lease_until: null, run_after: now, updated_at: now })
     .execute()
 }
 

@@ -6,11 +6,16 @@ import { consensusJob } from './consensus/consensus-job'
 import { unpackArchivesJob } from './intake/archives/unpack-job'
 import { imageCandidatesJob, readFilesJob } from './stamps/imaging-jobs'
 
-/** Every kind of job and who does it. Rooms add theirs here. */
-export const jobHandlers: JobHandlers = {
-  [JOB.readFiles]: readFilesJob,
-  [JOB.unpackArchives]: unpackArchivesJob,
-  [JOB.imageCandidates]: imageCandidatesJob,
+const quickJobs: JobHandlers = {
   [JOB.consensus]: consensusJob,
   [JOB.sendMail]: sendMailJob,
 }
+
+const longJobs: JobHandlers = {
+  [JOB.readFiles]: readFilesJob,
+  [JOB.unpackArchives]: unpackArchivesJob,
+  [JOB.imageCandidates]: imageCandidatesJob,
+}
+
+/** Every kind of job and who does it, a loop each entry: verdicts and letters never wait for a long intake. */
+export const jobLoops: readonly JobHandlers[] = [quickJobs, longJobs, longJobs]

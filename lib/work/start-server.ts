@@ -3,7 +3,7 @@ import { config } from '@/lib/platform/config/config'
 import { database } from '@/lib/platform/database'
 import { startJobLoop } from '@/lib/platform/jobs/run-jobs'
 import { log } from '@/lib/platform/log'
-import { jobHandlers } from './job-handlers'
+import { jobLoops } from './job-handlers'
 import { makeSetupCode } from './people/setup-code'
 
 const shared = globalThis as typeof globalThis & { ringsideStarted?: boolean }
@@ -18,6 +18,7 @@ export async function startServer(): Promise<void> {
   const code = await makeSetupCode(db)
   // Plain, not through the log: a person looks for it, at every level of the log.
   if (code) console.log(`First visit: open ${config().siteUrl}/welcome and enter the one-time code ${code}`)
-  startJobLoop(db, jobHandlers)
+  const loops = jobLoops.map((handlers) => startJobLoop(db, handlers))
+  process.once('SIGTERM', () => void Promise.all(loops.map((stop) => stop())))
   log.info({ data: config().dataFolder, site: config().siteUrl }, 'ringside started')
 }

@@ -1,10 +1,12 @@
 import type { Kysely } from 'kysely'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { openMemoryDatabase } from '@/db/connection'
+import { claimJob, setJobProgress } from '@/db/queries/jobs'
 import type { DB } from '@/db/schema'
 import { log } from '../log'
+import { isoTime } from '../clock'
 import { enqueueJob } from './enqueue-job'
-import { runDueJobs } from './run-jobs'
+import { runDueJobs, startJobLoop } from './run-jobs'
 
 let db: Kysely<DB>
 const START = new Date('2026-05-01T00:00:00.000Z')
@@ -78,13 +80,53 @@ describe('jobs', () => {
     expect(await states()).toMatchObject([{ state: 'done', attempts: 2 }])
   })
 
-  it('of an unknown kind fail by name, and do not stop the others', async () => {
+  it('that take the process down five times without getting on are given up, and those that get on are not', async () => {
+    await enqueueJob(db, { kind: 'note' })
+    const lapse = async () => {
+      passSeconds(61)
+      const claim = { kinds: ['note'], now: isoTime(), leaseUntil: isoTime(60_000) }
+      return (await claimJob(db, claim))!
+    }
+    for (let kills = 0; kills < 4; kills++) await lapse()
+    const job = await lapse()
+    const progress = { done: 3, total: 9, leaseUntil: isoTime(60_000), now: isoTime() }
+    await setJobProgress(db, { id: job.id, leaseUntil: job.lease_until! }, progress)
+    for (let kills = 0; kills < 5; kills++) await lapse()
+    passSeconds(61)
+    let ran = 0
+    expect(await runDueJobs(db, { note: async () => void ran++ })).toBe(1)
+    expect(ran).toBe(0)
+    expect(await states()).toMatchObject([{ state: 'failed', error: 'The server went down each time this was tried.' }])
+  })
+
+  it('are settled only by who holds them: a holder whose lease ran out writes nothing over the next', async () => {
+    await enqueueJob(db, { kind: 'note' })
+    const handler = async () => {
+      passSeconds(61)
+      const next = await claimJob(db, { kinds: ['note'], now: isoTime(), leaseUntil: isoTime(60_000) })
+      expect(next?.attempts).toBe(2)
+    }
+    await runDueJobs(db, { note: handler })
+    expect(await states()).toMatchObject([{ state: 'running', attempts: 2 }])
+  })
+
+  it('are given back when the process stops, so that the next need not wait for the lease', async () => {
+    await enqueueJob(db, { kind: 'note' })
+    let finish = () => {}
+    const stop = startJobLoop(db, { note: () => new Promise<void>((resolve) => (finish = resolve)) }, 5)
+    await vi.waitFor(async () => expect(await states()).toMatchObject([{ state: 'running' }]))
+    await stop()
+    expect(await states()).toMatchObject([{ state: 'queued', attempts: 0 }])
+    finish()
+    let ran = 0
+    expect(await runDueJobs(db, { note: async () => void ran++ })).toBe(1)
+    expect(ran).toBe(1)
+  })
+
+  it('of a kind that nobody here does are left alone, and do not stop the others', async () => {
     await enqueueJob(db, { kind: 'unheard-of' })
     await enqueueJob(db, { kind: 'note' })
-    expect(await runDueJobs(db, { note: async () => {} })).toBe(2)
-    expect(await states()).toMatchObject([
-      { state: 'queued', error: 'No handler for jobs of kind unheard-of' },
-      { state: 'done' },
-    ])
+    expect(await runDueJobs(db, { note: async () => {} })).toBe(1)
+    expect(await states()).toMatchObject([{ state: 'queued', attempts: 0 }, { state: 'done' }])
   })
 })

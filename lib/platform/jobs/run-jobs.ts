@@ -1,5 +1,5 @@
 import type { Kysely } from 'kysely'
-import { claimJob, setJobDone, setJobProgress, setJobRetry } from '@/db/queries/jobs'
+import { claimJob, giveBackJob, setJobDone, setJobProgress, setJobRetry, type Claim } from '@/db/queries/jobs'
 import type { DB } from '@/db/schema'
 import type { Job } from '@/db/schema/platform'
 import { fromJson } from '@/db/schema/values'
@@ -20,15 +20,27 @@ const LEASE_MS = 60_000
 const MAX_ATTEMPTS = 5
 const FIRST_RETRY_MS = 2_000
 
-async function runOne(db: Kysely<DB>, job: Job, handlers: JobHandlers): Promise<void> {
-  const handler = handlers[job.kind]
+interface Held {
+  kind: string
+  claim: Claim
+}
+
+/** What this process has in hand, to be given back when it is stopped. */
+const inHand = new Set<Held>()
+
+async function runOne(db: Kysely<DB>, job: Job, handler: JobHandler): Promise<void> {
+  const held: Held = { kind: job.kind, claim: { id: job.id, leaseUntil: job.lease_until! } }
+  inHand.add(held)
   try {
-    if (!handler) throw new Error(`No handler for jobs of kind ${job.kind}`)
+    if (job.attempts > MAX_ATTEMPTS) throw new Error(job.error ?? 'The server went down each time this was tried.')
     let { done, total } = job
     const progress = async (nextDone: number, nextTotal: number) => {
       done = nextDone
       total = nextTotal
-      await setJobProgress(db, job.id, { done, total, leaseUntil: isoTime(LEASE_MS), now: isoTime() })
+      const leaseUntil = isoTime(LEASE_MS)
+      if (await setJobProgress(db, held.claim, { done, total, leaseUntil, now: isoTime() })) {
+        held.claim = { id: job.id, leaseUntil }
+      }
     }
     const heartbeat = setInterval(() => void progress(done, total).catch(() => {}), LEASE_MS / 4)
     try {
@@ -36,32 +48,36 @@ async function runOne(db: Kysely<DB>, job: Job, handlers: JobHandlers): Promise<
     } finally {
       clearInterval(heartbeat)
     }
-    await setJobDone(db, job.id, isoTime())
+    await setJobDone(db, held.claim, isoTime())
   } catch (error) {
     const sentence = error instanceof Error ? error.message : String(error)
-    const again = job.attempts < MAX_ATTEMPTS
-    log.error({ job: job.id, kind: job.kind, attempt: job.attempts, again, err: error }, 'job failed')
-    const runAfter = again ? isoTime(FIRST_RETRY_MS * 4 ** (job.attempts - 1)) : null
-    await setJobRetry(db, job.id, { error: sentence, runAfter, now: isoTime() })
+    const { attempts } = job
+    const again = attempts < MAX_ATTEMPTS
+    log.error({ job: job.id, kind: job.kind, attempts, again, err: error }, 'job failed')
+    const runAfter = again ? isoTime(FIRST_RETRY_MS * 4 ** (attempts - 1)) : null
+    await setJobRetry(db, held.claim, { attempts, error: sentence, runAfter, now: isoTime() })
+  } finally {
+    inHand.delete(held)
   }
 }
 
-/** Runs jobs that are due, one after the other, until none is (or it should stop). Returns how many it ran. */
+/** Runs due jobs of the kinds that have a handler, one after the other, until none is (or it should stop). Returns how many. */
 export async function runDueJobs(db: Kysely<DB>, handlers: JobHandlers, shouldStop = () => false): Promise<number> {
+  const kinds = Object.keys(handlers)
   for (let ran = 0; ; ran++) {
     if (shouldStop()) return ran
-    const job = await claimJob(db, isoTime(), isoTime(LEASE_MS))
+    const job = await claimJob(db, { kinds, now: isoTime(), leaseUntil: isoTime(LEASE_MS) })
     if (!job) return ran
-    await runOne(db, job, handlers)
+    await runOne(db, job, handlers[job.kind])
   }
 }
 
 /**
- * Looks for due jobs for as long as the process lives. Three loops let a quick consensus pass a long imaging job and a
- * long unpacking. Returns a
- * function that stops it after the jobs in hand.
+ * Looks for due jobs of these kinds for as long as the process lives. Each loop works on one job at a time, so kinds that must
+ * not wait for long ones get a loop of their own. Returns a function that gives back what is in hand, so that the next process
+ * need not wait for the leases to run out.
  */
-export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400, loops = 3): () => Promise<void> {
+export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400): () => Promise<void> {
   let stopped = false
   const loop = async () => {
     while (!stopped) {
@@ -72,9 +88,10 @@ export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400
       if (!stopped && ran === 0) await new Promise((resolve) => setTimeout(resolve, idleMs))
     }
   }
-  const running = Array.from({ length: loops }, loop)
+  void loop()
   return async () => {
     stopped = true
-    await Promise.all(running)
+    const own = [...inHand].filter(({ kind }) => kind in handlers)
+    await Promise.all(own.map(({ claim }) => giveBackJob(db, claim, isoTime())))
   }
 }
