@@ -39,6 +39,7 @@ const page = (files: DeliveredFile[], nextCursor: string | null = null): FilePag
     working: false,
     progress: null,
     fault: null,
+    batches: [],
   },
 })
 

@@ -1,8 +1,8 @@
-import { sql, type Kysely } from 'kysely'
+import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Batch, FileRow } from '../schema/intake'
 
-/** The oldest archive that waits to be unpacked, of no paused batch; of those after `afterId`. */
+/** The oldest archive that waits to be unpacked, of no paused batch. */
 export async function findWaitingArchive(db: Kysely<DB>, campaignId: number): Promise<FileRow | null> {
   const row = await db
     .selectFrom('file')
@@ -43,38 +43,33 @@ export interface ListedBatch {
   id: number
   name: string
   state: Batch['state']
-  files: number
-  /** Not yet read. */
+  /** Files not yet read. */
   waiting: number
 }
 
-/** The batches that have files to be read, and those that are paused. */
+/** The batches that have files to be read, and those that are paused; the newest first. */
 export async function listUnfinishedBatches(db: Kysely<DB>, campaignId: number): Promise<ListedBatch[]> {
   return db
     .selectFrom('batch')
-    .leftJoin('file', (join) => join.onRef('file.batch_id', '=', 'batch.id'))
+    .leftJoin(
+      (e) =>
+        e
+          .selectFrom('file')
+          .select((f) => ['batch_id', f.fn.countAll<number>().as('waiting')])
+          .where('campaign_id', '=', campaignId)
+          .where('fate', '=', 'stored')
+          .groupBy('batch_id')
+          .as('stored'),
+      (join) => join.onRef('stored.batch_id', '=', 'batch.id'),
+    )
     .select((e) => [
       'batch.id',
       'batch.name',
       'batch.state',
-      e.fn.count<number>('file.id').as('files'),
-      sql<number>`count(case when file.fate = 'stored' then 1 end)`.as('waiting'),
+      e.fn.coalesce('stored.waiting', e.lit(0)).as('waiting'),
     ])
     .where('batch.campaign_id', '=', campaignId)
-    .where((e) =>
-      e.or([
-        e('batch.state', '=', 'paused'),
-        e.exists(
-          e
-            .selectFrom('file as waiting')
-            .select('waiting.id')
-            .where('waiting.campaign_id', '=', campaignId)
-            .where('waiting.fate', '=', 'stored')
-            .whereRef('waiting.batch_id', '=', 'batch.id'),
-        ),
-      ]),
-    )
-    .groupBy('batch.id')
+    .where((e) => e.or([e('batch.state', '=', 'paused'), e('stored.waiting', '>', 0)]))
     .orderBy('batch.id', 'desc')
     .limit(20)
     .execute()

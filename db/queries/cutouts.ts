@@ -83,24 +83,42 @@ export async function listPlaneSources(
     .execute()
 }
 
-/** File names with the candidate that has their planes, by key of the file. */
+export interface FileOfCandidate {
+  id: number
+  name: string
+  candidateId: number
+  candidate: string
+  gradesGiven: number
+}
+
+/** Files with the candidate that has their planes, by key of the file. */
 export async function listFilesOfCandidates(
   db: Kysely<DB>,
   campaignId: number,
   afterId: number,
   limit: number,
-): Promise<{ id: number; name: string; candidate: string }[]> {
+): Promise<FileOfCandidate[]> {
   return db
     .selectFrom('file')
     .innerJoin('plane', 'plane.file_id', 'file.id')
     .innerJoin('candidate', 'candidate.id', 'plane.candidate_id')
-    .select(['file.id', 'file.name', 'candidate.name as candidate'])
+    .select([
+      'file.id',
+      'file.name',
+      'candidate.id as candidateId',
+      'candidate.name as candidate',
+      'candidate.grades_given as gradesGiven',
+    ])
     .where('file.campaign_id', '=', campaignId)
     .where('file.id', '>', afterId)
     .groupBy('file.id')
     .orderBy('file.id')
     .limit(limit)
     .execute()
+}
+
+export async function deletePlanesOfFiles(db: Kysely<DB>, fileIds: readonly number[]): Promise<void> {
+  if (fileIds.length > 0) await db.deleteFrom('plane').where('file_id', 'in', fileIds).execute()
 }
 
 export interface CandidateFacts {

@@ -37,6 +37,8 @@ export interface IntakeSummary {
   progress: { what: 'unpacking' | 'reading'; done: number; total: number } | null
   /** Why work stands still, when a job failed. */
   fault: string | null
+  /** Batches of which files wait to be read, or that are paused; the newest first. */
+  batches: { id: number; name: string; state: 'open' | 'paused'; waiting: number }[]
 }
 
 export interface FilePage {

@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { z } from 'zod'
+import { listUnfinishedBatches } from '@/db/queries/batches'
 import { countCandidates } from '@/db/queries/campaigns'
 import { listPlanesOfFiles, type PlaneOfFile } from '@/db/queries/cutouts'
 import { countFates, listFiles, type ListedFile } from '@/db/queries/intake'
@@ -134,5 +135,6 @@ export async function intakeSummary(db: Kysely<DB>, { campaign }: CampaignPermit
           }
         : null,
     fault: failed?.error ?? null,
+    batches: await listUnfinishedBatches(db, campaign.id),
   }
 }

@@ -24,6 +24,10 @@ export const MANIFEST_COLUMNS = {
 } as const
 
 export type ManifestColumn = keyof typeof MANIFEST_COLUMNS
+/** Which header stands for which column. */
+export type ManifestHeaders = Partial<Record<ManifestColumn, string>>
+/** What a lead chose, column by column; '' is none, and a column that is not named is left to its spelling. */
+export type ChosenColumns = Partial<Record<ManifestColumn, string>>
 
 const plain = (header: string): string => header.toLowerCase().replace(/\(.*?\)|\[.*?\]|[\s_.\-#]/g, '')
 
@@ -31,10 +35,15 @@ const plain = (header: string): string => header.toLowerCase().replace(/\(.*?\)|
  * Which header stands for which column. The spellings are tried in the order above, so that `candidate` stands before `id`
  * when a table has both.
  */
-export function manifestColumns(header: readonly string[]): Partial<Record<ManifestColumn, string>> {
+export function manifestColumns(header: readonly string[], chosen: ChosenColumns = {}): ManifestHeaders {
   const bySpelling = new Map(header.toReversed().map((name) => [plain(name), name]))
-  const found: Partial<Record<ManifestColumn, string>> = {}
+  const found: ManifestHeaders = {}
   for (const [column, spellings] of Object.entries(MANIFEST_COLUMNS) as [ManifestColumn, readonly string[]][]) {
+    const choice = chosen[column]
+    if (choice !== undefined && (choice === '' || header.includes(choice))) {
+      if (choice !== '') found[column] = choice
+      continue
+    }
     const spelling = spellings.find((name) => bySpelling.has(name))
     if (spelling !== undefined) found[column] = bySpelling.get(spelling)
   }

@@ -1,7 +1,7 @@
-import { readCsv } from '@/lib/science/formats/csv'
+import { readCsv, type CsvTable } from '@/lib/science/formats/csv'
 import { parseDeclination, parseRightAscension } from '@/lib/science/sky/coordinates'
 import { baseName } from './file-name'
-import { manifestColumns, type ManifestColumn } from './manifest-columns'
+import { manifestColumns, type ChosenColumns, type ManifestColumn, type ManifestHeaders } from './manifest-columns'
 
 export interface ManifestEntry {
   line: number
@@ -34,9 +34,12 @@ function cell(values: Record<string, string>, name: string | undefined): string 
 }
 
 /** Never throws on bad content: every value that cannot be used is named with its line. */
-export function parseManifest(bytes: Uint8Array): ParsedManifest {
+export function parseManifest(bytes: Uint8Array, chosen: ChosenColumns = {}): ParsedManifest {
   const table = readCsv(bytes)
-  const columns = manifestColumns(table.header)
+  return entriesOf(table, manifestColumns(table.header, chosen))
+}
+
+function entriesOf(table: CsvTable, columns: ManifestHeaders): ParsedManifest {
   const problems = table.problems.map(({ line, message }) => (line === null ? message : `Line ${line}: ${message}`))
   if (columns.file === undefined && columns.candidate === undefined) {
     const found = table.header.length > 0 ? `it has ${table.header.slice(0, 12).join(', ')}` : 'it has none'
@@ -50,7 +53,7 @@ export function parseManifest(bytes: Uint8Array): ParsedManifest {
 function entryOf(
   line: number,
   values: Record<string, string>,
-  columns: Partial<Record<ManifestColumn, string>>,
+  columns: ManifestHeaders,
   problems: string[],
 ): ManifestEntry | null {
   const fileName = cell(values, columns.file)

@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { listCandidateNames, listFilesOfCandidates, upsertCandidates } from '@/db/queries/cutouts'
+import { replaceFileProblems, type NewFileProblem } from '@/db/queries/file-problems'
 import { setFileFates, type WaitingFile } from '@/db/queries/intake'
 import {
   deleteManifestRows,
@@ -13,13 +14,16 @@ import type { DB } from '@/db/schema'
 import type { ManifestRow } from '@/db/schema/intake'
 import { isoTime } from '@/lib/platform/clock'
 import { baseName } from './file-name'
+import { groupBy } from './group-by'
 import { manifestFacts } from './manifest-facts'
 import { rowsOfFile } from './match-name'
+import { moveNamedFiles } from './move-named-files'
 import type { ManifestEntry, ParsedManifest } from './parse-manifest'
 import { tryUnmatchedAgain } from './try-again'
 
 const ROWS_PER_STATEMENT = 500
 const PROBLEMS_TOLD = 5
+const MOST_PROBLEMS = 20_000
 
 /**
  * Keeps the lines of a parsed manifest, gives the candidates that are here already what it tells of them, and has unmatched
@@ -31,9 +35,13 @@ export async function keepManifest(
   file: WaitingFile,
   parsed: ParsedManifest,
 ): Promise<void> {
-  const { entries, problems, refusal } = parsed
+  const { entries, refusal } = parsed
+  const problems = parsed.problems.map(problemOfLine)
   if (refusal) {
-    await setFileFates(db, [file.id], { fate: 'refused', ...refusal, duplicateOf: null }, isoTime())
+    await db.transaction().execute(async (transaction) => {
+      await replaceFileProblems(transaction, file.id, [])
+      await setFileFates(transaction, [file.id], { fate: 'refused', ...refusal, duplicateOf: null }, isoTime())
+    })
     return
   }
   await deleteManifestRows(db, file.id)
@@ -48,7 +56,11 @@ export async function keepManifest(
   if (entries.some(({ candidate, fileName }) => candidate === null && fileName !== null)) {
     await updateCandidatesOfFiles(db, campaignId)
   }
+  if (entries.some(({ candidate, fileName }) => candidate !== null && fileName !== null)) {
+    problems.push(...(await moveNamedFiles(db, campaignId, file.id)))
+  }
   await db.transaction().execute(async (transaction) => {
+    await replaceFileProblems(transaction, file.id, problems.slice(0, MOST_PROBLEMS))
     const to = {
       fate: 'read',
       fault: null,
@@ -60,11 +72,20 @@ export async function keepManifest(
   })
 }
 
-function manifestReason(lines: number, problems: string[]): string {
+/** Problems of a parsed table are sentences that begin with their line. */
+function problemOfLine(text: string): NewFileProblem {
+  const match = /^Line (\d+): (.*)$/s.exec(text)
+  return match ? { line: Number(match[1]), sentence: match[2] } : { line: null, sentence: text }
+}
+
+function manifestReason(lines: number, problems: readonly NewFileProblem[]): string {
   const counted = `${lines} ${lines === 1 ? 'line' : 'lines'} taken.`
   if (problems.length === 0) return counted
+  const told = problems
+    .slice(0, PROBLEMS_TOLD)
+    .map(({ line, sentence }) => (line === null ? sentence : `Line ${line}: ${sentence}`))
   const more = problems.length > PROBLEMS_TOLD ? ` And ${problems.length - PROBLEMS_TOLD} more.` : ''
-  return `${counted} ${problems.slice(0, PROBLEMS_TOLD).join(' ')}${more}`
+  return `${counted} ${told.join(' ')}${more}`
 }
 
 function rowOf(entry: ManifestEntry, campaignId: number, fileId: number): Omit<ManifestRow, 'id'> {
@@ -121,14 +142,4 @@ async function updateCandidatesOfFiles(db: Kysely<DB>, campaignId: number): Prom
 async function giveFacts(db: Kysely<DB>, campaignId: number, told: Map<string, ManifestRow[]>): Promise<void> {
   const facts = [...told].map(([name, rows]) => ({ name, ...manifestFacts(rows), imagedAt: null }))
   await upsertCandidates(db, campaignId, facts, isoTime())
-}
-
-export function groupBy<T>(rows: readonly T[], keyOf: (row: T) => string): Map<string, T[]> {
-  const groups = new Map<string, T[]>()
-  for (const row of rows) {
-    const group = groups.get(keyOf(row))
-    if (group) group.push(row)
-    else groups.set(keyOf(row), [row])
-  }
-  return groups
 }

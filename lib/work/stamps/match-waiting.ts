@@ -5,7 +5,7 @@ import { hasManifestRows, listManifestRowsOfBases } from '@/db/queries/manifests
 import { isoTime } from '@/lib/platform/clock'
 import { baseName } from '@/lib/work/intake/file-name'
 import { matchName, type NameMatch } from '@/lib/work/intake/match-name'
-import { groupBy } from '@/lib/work/intake/read-manifest'
+import { groupBy } from '@/lib/work/intake/group-by'
 import { noCandidate, type Refusal } from '@/lib/work/intake/refusals'
 import type { CampaignWork, ImagingTools } from './campaign-work'
 import type { MatchedFile } from './waiting-candidates'

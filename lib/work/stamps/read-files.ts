@@ -1,7 +1,9 @@
 import 'server-only'
 import { countWaitingFiles, listWaitingFiles, newestDelivery } from '@/db/queries/intake'
+import { listReadable } from '@/db/queries/known-files'
 import { isoTime } from '@/lib/platform/clock'
-import { groupBy, keepManifest } from '@/lib/work/intake/read-manifest'
+import { groupBy } from '@/lib/work/intake/group-by'
+import { keepManifest } from '@/lib/work/intake/read-manifest'
 import { campaignWork, type CampaignWork, type ImagingTools } from './campaign-work'
 import { matchByHeader, matchPage, type UnmatchedFile } from './match-waiting'
 import { planImaging } from './plan-imaging'
@@ -10,6 +12,8 @@ import { WaitingCandidates, type MatchedFile } from './waiting-candidates'
 
 const FILES_PER_PAGE = 3000
 const LOOK_AGAIN_MS = 250
+/** So many candidates are imaged before it is asked again whether their batch goes on. */
+const GROUPS_PER_LOOK = 128
 /** A file that shows its bands only when it is opened waits this long at most while more files keep coming. */
 const LONGEST_WAIT_MS = 20_000
 
@@ -103,16 +107,27 @@ class Reading {
   }
 
   async #image(work: CampaignWork, groups: MatchedFile[][]): Promise<void> {
-    if (groups.length === 0) return
-    const planned = await planImaging(this.tools, work, groups)
-    await runImaging(this.tools, work, planned, (files) => this.#tell(files))
+    for (let start = 0; start < groups.length; start += GROUPS_PER_LOOK) {
+      const part = groups.slice(start, start + GROUPS_PER_LOOK)
+      // A batch may have been paused or cancelled meanwhile. What is left of a group is found again by the next look.
+      const ids = part.flatMap((group) => group.map(({ file }) => file.id))
+      const readable = await listReadable(this.tools.db, ids)
+      const standing = part.filter((group) => group.every(({ file }) => readable.has(file.id)))
+      const planned = await planImaging(this.tools, work, standing)
+      await runImaging(this.tools, work, planned, (files) => this.#tell(files))
+    }
   }
 
   async #readManifests(): Promise<boolean> {
     const { db, blobs, runner } = this.tools
     const files = await listWaitingFiles(db, this.campaignId, 'manifest', 0, FILES_PER_PAGE)
     for (const file of files) {
-      await keepManifest(db, this.campaignId, file, await runner.manifest(blobs.pathOf(file.sha256)))
+      await keepManifest(
+        db,
+        this.campaignId,
+        file,
+        await runner.manifest({ path: blobs.pathOf(file.sha256), columns: file.columns }),
+      )
       await this.#tell(1)
     }
     return files.length > 0

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { route } from '@/app/api/_lib/route'
 import { FileListQuery, listDeliveredFiles } from '@/lib/work/intake/list-files'
+import { LookUp, lookUpFiles } from '@/lib/work/intake/look-up-files'
 import { tryRefusedAgain } from '@/lib/work/intake/try-again'
 import { permitCampaign } from '@/lib/work/people/permission'
 
@@ -22,12 +23,19 @@ export const GET = route({
   },
 })
 
-/** POST /api/campaigns/{slug}/files `{"retry":"refused"}`: leads have refused files tried again. Answers `{ files: count }`. */
+const Retry = z.strictObject({ retry: z.literal('refused', 'Send {"retry":"refused"}, or {"look":[{"name":…}]}.') })
+
+/**
+ * POST /api/campaigns/{slug}/files, leads. `{"retry":"refused"}` has refused files tried again and answers `{ files: count }`.
+ * `{"look":[{"name":…}, …]}` answers what is here under up to 5,000 names, `{ files: [{ sha256, bytes, fate } or null, …], told }`
+ * in their order, so that a folder sent again sends only what is missing; `told` is what manifests here say of each.
+ */
 export const POST = route({
   params,
-  body: z.strictObject({ retry: z.literal('refused', 'Send {"retry":"refused"}.') }),
-  handler: async ({ db, viewer, params }) => {
+  body: z.union([Retry, LookUp]),
+  handler: async ({ db, viewer, params, body }) => {
     const permit = await permitCampaign(db, viewer, params.slug, 'lead')
+    if ('look' in body) return Response.json(await lookUpFiles(db, permit, body))
     return Response.json({ files: await tryRefusedAgain(db, permit) })
   },
 })
