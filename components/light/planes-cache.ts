@@ -5,6 +5,16 @@ const MOST_KEPT = 6
 
 const kept = new Map<string, { loading: Promise<DecodedPlanes>; ready: DecodedPlanes | null }>()
 
+async function unzip({ body }: Response): Promise<Uint8Array> {
+  if (!body) return new Uint8Array()
+  try {
+    const plain = new Response(body.pipeThrough(new DecompressionStream('gzip')))
+    return new Uint8Array(await plain.arrayBuffer())
+  } catch {
+    throw new Error('The pixels did not arrive whole. Load the page again.')
+  }
+}
+
 async function fetchPlanes(url: string): Promise<DecodedPlanes> {
   let response: Response
   try {
@@ -16,7 +26,7 @@ async function fetchPlanes(url: string): Promise<DecodedPlanes> {
     const problem = (await response.json().catch(() => null)) as { detail?: unknown } | null
     throw new Error(typeof problem?.detail === 'string' ? problem.detail : `The server answered ${response.status}.`)
   }
-  return decodePlanes(new Uint8Array(await response.arrayBuffer()))
+  return decodePlanes(await unzip(response))
 }
 
 /** Rejects with an Error whose message is a sentence for people; what failed is asked for again the next time. */
