@@ -139,6 +139,7 @@ function show(more: Partial<SplitsScreenProps> = {}) {
     personId: 1,
     splits: { total: 3, cases, ruled: [] },
     run: RUN,
+    open: 0,
     evidence: evidence(2, 'SWS0002'),
     decides: ['Two more A grades would confirm it.'],
     justRuled: null,
@@ -288,10 +289,15 @@ describe('the splits page', () => {
   })
 
   it('says what to do next when nothing is split', () => {
-    const none = { splits: { total: 0, cases: [], ruled: [] }, evidence: null }
+    const none = { splits: { total: 0, cases: [], ruled: [] }, evidence: null, open: 7 }
     show(none)
     expect(screen.getByRole('heading', { name: 'Nothing is split' })).toBeVisible()
     expect(screen.getByText(/7 candidates still wait for grades/)).toBeVisible()
+  })
+
+  it('calls the catalogue ready only when nothing is open now, whatever the newest run knew', () => {
+    show({ splits: { total: 0, cases: [], ruled: [] }, evidence: null, open: 0 })
+    expect(screen.getByText(/Every candidate is decided/)).toBeVisible()
   })
 
   it('before the first run sends to it', () => {

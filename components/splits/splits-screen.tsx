@@ -26,6 +26,8 @@ export interface SplitsScreenProps {
   personId: number
   splits: Splits
   run: NewestRun | null
+  /** Candidates that are not decided now, whatever the newest run knew. */
+  open: number
   evidence: CandidateEvidence | null
   decides: string[]
   /** The ruling just made, to say so and to offer its reversal. */
@@ -138,7 +140,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
             <KeyLine on={keysOn} onSwitch={setKeysOn} />
           </>
         ) : (
-          <NothingSplit slug={slug} run={props.run} />
+          <NothingSplit slug={slug} run={props.run} open={props.open} />
         )}
       </div>
       <div className="border-t border-line lg:col-start-1 lg:row-start-2 lg:border-r">
@@ -168,7 +170,7 @@ function JustRuled({ ruling, href }: { ruling: RecentRuling; href: string }) {
   )
 }
 
-function NothingSplit({ slug, run }: { slug: string; run: NewestRun | null }) {
+function NothingSplit({ slug, run, open }: { slug: string; run: NewestRun | null; open: number }) {
   const home = `/campaigns/${slug}`
   if (!run) {
     return (
@@ -182,7 +184,6 @@ function NothingSplit({ slug, run }: { slug: string; run: NewestRun | null }) {
       </div>
     )
   }
-  const { open } = run.summary
   return (
     <div className="p-5">
       <EmptyState title="Nothing to settle">

@@ -1,5 +1,5 @@
 import { mkdirSync } from 'node:fs'
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import { openDatabase } from '@/db/connection'
 import { migrateToLatest } from '@/db/migrator'
 import type { DB } from '@/db/schema'
@@ -22,4 +22,9 @@ export function database(): Promise<Kysely<DB>> {
     throw error
   })
   return shared.ringsideDatabase
+}
+
+/** Throws where the database cannot be read. */
+export async function assertReadable(): Promise<void> {
+  await sql`select count(*) from site`.execute(await database())
 }
