@@ -66,6 +66,11 @@ describe('the campaign', () => {
   it('takes an empty name pattern for the default', () => {
     expect(NamePattern.parse(' ')).toBeNull()
   })
+
+  it('has at most two {any}', () => {
+    expect(NamePattern.parse('{any}_{candidate}_{any}_{band}')).toBe('{any}_{candidate}_{any}_{band}')
+    expect(() => NamePattern.parse('{any}{any}{any}{candidate}')).toThrow('at most two {any}')
+  })
 })
 
 it('tells the faults of both parts of the form in one go', () => {

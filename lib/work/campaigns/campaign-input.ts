@@ -88,6 +88,7 @@ export const NamePattern = z
       message: 'The name pattern knows {candidate}, {band} and {any}.',
     },
   )
+  .refine((text) => (text.match(/\{any\}/g) ?? []).length <= 2, 'The name pattern has at most two {any}.')
   .transform((text) => text || null)
 
 export const CampaignInput = z.object({

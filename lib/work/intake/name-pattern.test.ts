@@ -31,4 +31,20 @@ describe('the name pattern', () => {
   ])('%s does not fit %s', (pattern, name) => {
     expect(nameMatcher(pattern, ['g', 'r', 'i']).match(name)).toBeNull()
   })
+
+  it.each([
+    ['{any}{any}{any}{any}{any}{any}{any}{candidate}#', 'a'.repeat(255)],
+    ['{any}a{any}a{any}a{any}a{any}a{any}a{any}a{candidate}#', 'a'.repeat(255)],
+    ['{any}{candidate}{any}{candidate}{any}#', 'ab'.repeat(127)],
+  ])('%s answers for a name of the longest kind without trying every way to cut it', (pattern, name) => {
+    // Tried in every way, the first alone would be more than 10^12 cuts.
+    expect(nameMatcher(pattern, ['g']).match(name)).toBeNull()
+  })
+
+  it('in any case keeps each letter in its place, also those that have two letters in the other case', () => {
+    expect(nameMatcher('{candidate}_{band}', ['g']).match('\u0130I_G.fits')).toEqual({
+      candidate: '\u0130I',
+      band: 'g',
+    })
+  })
 })
