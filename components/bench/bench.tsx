@@ -2,7 +2,7 @@
 
 import { runLight } from '@/components/light/light-keys'
 import { LightSection } from '@/components/light/light-section'
-import { useLight } from '@/components/light/use-light'
+import { useLight, useLightFact } from '@/components/light/use-light'
 import { KeyCap } from '@/components/ui/key-cap'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
 import { BenchHeader } from './bench-header'
@@ -38,6 +38,8 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
   const { session, look, run } = bench
   const light = useLight(personId, slug)
+  // On a phone the picture would shrink too much beside both.
+  const lightOpen = useLightFact(light, (now) => now.open)
   useLightSupply(light, look?.candidate.id ?? null, session.upcoming)
   useBenchKeys({
     on: keysOn,
@@ -107,12 +109,14 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
               <div className="order-last md:order-none">
                 <GradeLadder chosen={look.answer?.grade ?? null} onGrade={(letter) => run({ do: 'grade', letter })} />
               </div>
-              <TagChooser
-                tags={bench.draft.tags}
-                open={bench.chooser === 'tags'}
-                onOpen={() => run({ do: 'tags' })}
-                onToggle={bench.toggleTag}
-              />
+              <div className={lightOpen ? 'max-md:hidden' : 'contents'}>
+                <TagChooser
+                  tags={bench.draft.tags}
+                  open={bench.chooser === 'tags'}
+                  onOpen={() => run({ do: 'tags' })}
+                  onToggle={bench.toggleTag}
+                />
+              </div>
               <LightSection light={light} keys={keysOn} />
             </>
           ) : null}

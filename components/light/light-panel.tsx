@@ -57,46 +57,48 @@ export default function LightPanel({ light }: { light: LightStore }) {
         />
       </div>
       <div className="flex flex-col gap-1.5">
-        <div role="group" aria-label="Stretch" className="grid grid-cols-4 gap-1">
-          {CURVE_LABELS.map((one) => (
-            <Toggle
-              key={one.curve}
-              on={curve === one.curve}
-              title={one.title}
-              onPress={() => light.change({ curve: one.curve })}
-            >
-              {one.label}
-            </Toggle>
-          ))}
-        </div>
-        <div className="grid grid-cols-4 gap-1">
+        <div className="grid grid-cols-8 gap-1 md:grid-cols-4">
+          <div role="group" aria-label="Stretch" className="contents">
+            {CURVE_LABELS.map((one) => (
+              <Toggle
+                key={one.curve}
+                on={curve === one.curve}
+                title={one.title}
+                onPress={() => light.change({ curve: one.curve })}
+              >
+                {one.label}
+              </Toggle>
+            ))}
+          </div>
           <Toggle on={invert} title="Dark on light" onPress={() => light.change({ invert: !invert })}>
             Invert
           </Toggle>
           <ZoomButtons light={light} />
         </div>
-        {bands === '' ? null : (
-          <details className="text-small">
-            <summary className="flex min-h-8 items-center text-note text-mute hover:text-text md:min-h-6">
-              <span aria-hidden="true" className="mr-1.5">
-                ▸
-              </span>
-              Weights of the bands
-            </summary>
-            {bands.split('\n').map((band) => (
-              <BandWeight key={band} light={light} band={band} />
-            ))}
-          </details>
-        )}
-        <label className="flex min-h-8 items-center gap-2 text-note text-mute md:min-h-6">
-          <input
-            type="checkbox"
-            checked={keep}
-            onChange={(event) => light.setKeep(event.target.checked)}
-            className="size-4 accent-text"
-          />
-          Same light for the next candidate
-        </label>
+        <div className="grid gap-x-3 @xs:grid-cols-2">
+          <label className="flex min-h-8 items-center gap-2 text-note text-mute md:min-h-6">
+            <input
+              type="checkbox"
+              checked={keep}
+              onChange={(event) => light.setKeep(event.target.checked)}
+              className="size-4 accent-text"
+            />
+            Keep for the next ones
+          </label>
+          {bands === '' ? null : (
+            <details className="group text-small @xs:open:col-span-2">
+              <summary className="flex min-h-8 list-none items-center text-note text-mute hover:text-text md:min-h-6">
+                <span aria-hidden="true" className="mr-1.5 group-open:rotate-90">
+                  ▸
+                </span>
+                Weights of the bands
+              </summary>
+              {bands.split('\n').map((band) => (
+                <BandWeight key={band} light={light} band={band} />
+              ))}
+            </details>
+          )}
+        </div>
       </div>
     </div>
   )

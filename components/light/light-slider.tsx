@@ -4,6 +4,17 @@ import { useEffect, useId, useRef } from 'react'
 import type { LightStore } from './light-store'
 import { STEPS, type SliderScale } from './slider-scales'
 
+/** A thin line and a round handle, the same in every browser; the whole height takes the finger. */
+const SLIDER = [
+  'h-8 w-full touch-none cursor-pointer appearance-none rounded-key bg-transparent disabled:opacity-40 md:h-6',
+  '[&::-webkit-slider-runnable-track]:h-0.5 [&::-webkit-slider-runnable-track]:bg-edge',
+  '[&::-webkit-slider-thumb]:-mt-[9px] [&::-webkit-slider-thumb]:size-5 [&::-webkit-slider-thumb]:appearance-none',
+  '[&::-webkit-slider-thumb]:rounded-full [&::-webkit-slider-thumb]:bg-text',
+  'md:[&::-webkit-slider-thumb]:-mt-1.5 md:[&::-webkit-slider-thumb]:size-3.5',
+  '[&::-moz-range-track]:h-0.5 [&::-moz-range-track]:bg-edge [&::-moz-range-thumb]:size-4',
+  '[&::-moz-range-thumb]:border-0 [&::-moz-range-thumb]:bg-text',
+].join(' ')
+
 /**
  * A slider that writes into Light and follows it without being rendered: place and figure are set on the elements themselves.
  * Arrow keys and all other keys of a slider are the browser's own.
@@ -53,7 +64,7 @@ export function LightSlider({
         max={STEPS}
         defaultValue={0}
         onInput={(event) => write(light, scale.value(Number(event.currentTarget.value)))}
-        className="h-8 w-full touch-pan-y accent-text disabled:opacity-40 md:h-6"
+        className={SLIDER}
       />
       <output ref={figure} htmlFor={id} className="figures text-right text-note text-mute" />
     </div>
