@@ -3,6 +3,7 @@
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
 import { benchImaging } from './bench-imaging'
+import { benchIntake } from './bench-intake'
 import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
@@ -11,6 +12,7 @@ import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, () => Promise<string[]>> = {
   imaging: benchImaging,
+  intake: benchIntake,
   'lens-light': () => benchLensLight(),
   match: benchMatch,
   votable: benchVotable,

@@ -11,6 +11,9 @@ export interface TestServer {
   /** Everything that it printed so far. */
   output(): string
   stop(): Promise<void>
+  /** SIGKILL: no goodbye. */
+  kill(): Promise<void>
+  pid: number
 }
 
 function freePort(): Promise<number> {
@@ -58,6 +61,12 @@ export async function startTestServer(dataFolder: string): Promise<TestServer> {
     url,
     dataFolder,
     output,
+    pid: child.pid ?? 0,
+    async kill() {
+      const ended = new Promise((resolve) => child.once('exit', resolve))
+      child.kill('SIGKILL')
+      await ended
+    },
     async stop() {
       const ended = new Promise((resolve) => child.once('exit', resolve))
       child.kill('SIGTERM')

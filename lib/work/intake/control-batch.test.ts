@@ -2,7 +2,7 @@ import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { cutoutFits } from '@/tests/_support/cutouts'
 import { makeIntake, type IntakeScenario } from '@/tests/_support/intake'
 import { permitCampaign } from '@/lib/work/people/permission'
-import { BatchControl, controlBatch } from './control-batch'
+import { type BatchControl, controlBatch } from './control-batch'
 import { intakeSummary } from './list-files'
 import { tryRefusedAgain } from './try-again'
 
