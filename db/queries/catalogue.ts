@@ -2,6 +2,7 @@ import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateState } from '../schema/intake'
 import { among, inCampaign } from './by-ids'
+import { isOwnJudgement } from './grading'
 
 /** Which candidates of a campaign a list may draw on, and of which of them it may use what people judged. */
 export interface CandidateScope {
@@ -29,15 +30,13 @@ export interface CandidateRow {
 }
 
 /**
- * Whether the reader may see what was judged of this candidate. The same condition as `listJudgedAmong` of the grading room:
- * a standing answer of their own that is a grade and not 'cannot judge'. A list made once costs what the reader has graded,
- * not what the campaign holds.
+ * Whether the reader may see what was judged of this candidate. A list made once costs what the reader has graded, not what the
+ * campaign holds: hence the index of the reader's grades, and not that of the candidate's.
  */
 function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBool> {
   if (judgedBy === null) return sql<SqlBool>`true`
-  return sql<SqlBool>`candidate.id in (select own.candidate_id from grade own
-    where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and own.grade != 'U'
-      and not exists (select 1 from grade newer where newer.replaces = own.id))`
+  return sql<SqlBool>`candidate.id in (select own.candidate_id from grade own indexed by grade_person
+    where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and ${isOwnJudgement(judgedBy)})`
 }
 
 function candidates(db: Kysely<DB>, scope: CandidateScope) {

@@ -1,4 +1,4 @@
-import type { Insertable, Kysely } from 'kysely'
+import { sql, type Insertable, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { GradeRow, GradeTable } from '../schema/grading'
 import { among, inCampaign } from './by-ids'
@@ -18,7 +18,16 @@ export async function listCandidatesAmong(
   return rows.map((row) => row.id)
 }
 
-/** Those of the candidates for which the person's standing answer, on any occasion, is a grade and not 'cannot judge'. */
+/**
+ * The one condition of what a grader may see: of `grade` as `own`, a standing answer of the person, on any occasion, that is a
+ * grade and not 'cannot judge'.
+ */
+export function isOwnJudgement(personId: number): RawBuilder<SqlBool> {
+  return sql<SqlBool>`+own.person_id = ${personId} and own.grade != 'U'
+    and not exists (select 1 from grade newer where newer.replaces = own.id)`
+}
+
+/** Those of the candidates that the person has judged. */
 export async function listJudgedAmong(
   db: Kysely<DB>,
   campaignId: number,
@@ -26,16 +35,12 @@ export async function listJudgedAmong(
   ids: readonly number[],
 ): Promise<number[]> {
   const rows = await db
-    .selectFrom('grade')
-    .select('candidate_id')
+    .selectFrom('grade as own')
+    .select('own.candidate_id')
     .distinct()
-    .where(inCampaign('campaign_id', campaignId))
-    .where(inCampaign('person_id', personId))
-    .where('candidate_id', 'in', among(ids))
-    .where('grade', '!=', 'U')
-    .where((e) =>
-      e.not(e.exists(e.selectFrom('grade as newer').select('newer.id').whereRef('newer.replaces', '=', 'grade.id'))),
-    )
+    .where(inCampaign('own.campaign_id', campaignId))
+    .where('own.candidate_id', 'in', among(ids))
+    .where(isOwnJudgement(personId))
     .execute()
   return rows.map((row) => row.candidate_id)
 }
@@ -112,4 +117,25 @@ export async function countLiveLeases(
     .where('candidate_id', '=', candidateId)
     .where('until', '>', now)
     .executeTakeFirstOrThrow()
+}
+
+/** Notes, once for each, that the person has been shown the judgement of these candidates. */
+export async function insertJudgementsShown(
+  db: Kysely<DB>,
+  shown: { campaignId: number; personId: number; candidateIds: readonly number[]; now: string },
+): Promise<void> {
+  await sql`
+    insert or ignore into judgement_shown (campaign_id, candidate_id, person_id, at)
+    select ${shown.campaignId}, value, ${shown.personId}, ${shown.now}
+    from json_each(${JSON.stringify(shown.candidateIds)})`.execute(db)
+}
+
+export async function isJudgementShown(db: Kysely<DB>, candidateId: number, personId: number): Promise<boolean> {
+  const row = await db
+    .selectFrom('judgement_shown')
+    .select('at')
+    .where('person_id', '=', personId)
+    .where('candidate_id', '=', candidateId)
+    .executeTakeFirst()
+  return row !== undefined
 }

@@ -33,3 +33,11 @@ export interface GradeTable {
   given_at: IsoTime
 }
 export type GradeRow = Selectable<GradeTable>
+
+/** Once for each grader and candidate, when its judgement was first shown to them. */
+export interface JudgementShownTable {
+  campaign_id: number
+  candidate_id: number
+  person_id: number
+  at: IsoTime
+}

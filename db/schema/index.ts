@@ -1,7 +1,7 @@
 import type { CampaignTable, MembershipTable, RecipeTable, RuleTable } from './campaigns'
 import type { DesignationTable, EntryTable } from './catalogue'
 import type { RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
-import type { GradeTable, LeaseTable } from './grading'
+import type { GradeTable, JudgementShownTable, LeaseTable } from './grading'
 import type {
   BatchTable,
   CandidateTable,
@@ -32,6 +32,7 @@ export interface DB {
   stamp: StampTable
   lease: LeaseTable
   grade: GradeTable
+  judgement_shown: JudgementShownTable
   run: RunTable
   verdict: VerdictTable
   ruling: RulingTable

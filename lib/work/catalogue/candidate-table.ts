@@ -10,10 +10,11 @@ import {
 import { countVotes } from '@/db/queries/consensus'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
+import { noteShown } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
 import { candidateScope } from './candidate-scope'
-import { asListed, type ListedCandidate } from './list-candidates'
+import { asListed, saysJudgement, type ListedCandidate } from './list-candidates'
 
 export interface CandidateTableRow extends ListedCandidate {
   /** null while withheld */
@@ -63,16 +64,28 @@ export async function candidateTable(
   const ids = listed.map((row) => row.id)
   const open = listed.filter((row) => !row.withheld).map((row) => row.id)
   const votes = await countVotes(db, open)
+  const counts = (id: number) => votes.get(id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }
+  const told = listed.filter((row) => saysJudgement(row) || (!row.withheld && hasOthers(counts(row.id))))
+  await noteShown(
+    db,
+    permit,
+    told.map(({ id }) => id),
+  )
   const thumbnails = await thumbnailsOf(db, permit, ids)
   return {
     count,
     all,
     rows: listed.map((row) => ({
       ...row,
-      votes: row.withheld ? null : (votes.get(row.id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }),
+      votes: row.withheld ? null : counts(row.id),
       thumbnail: thumbnails.get(row.id) ?? null,
     })),
   }
+}
+
+/** The reader's own vote is one of them. */
+function hasOthers(votes: Record<GradeLetter, number>): boolean {
+  return Object.values(votes).reduce((sum, count) => sum + count, 0) > 1
 }
 
 /** Addresses of small pictures, by candidate. */

@@ -2,6 +2,7 @@ import 'server-only'
 import type { Kysely } from 'kysely'
 import { countEntries } from '@/db/queries/catalogue'
 import type { DB } from '@/db/schema'
+import { noteShown } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateScope } from './candidate-scope'
 import { thumbnailsOf } from './candidate-table'
@@ -25,11 +26,9 @@ export async function catalogueTable(db: Kysely<DB>, permit: CampaignPermit<'rea
   const { all, revealed } = await countEntries(db, candidateScope(permit))
   const rows: CatalogueTableRow[] = []
   for await (const entries of catalogueEntries(db, permit)) {
-    const thumbnails = await thumbnailsOf(
-      db,
-      permit,
-      entries.map((entry) => entry.id),
-    )
+    const ids = entries.map((entry) => entry.id)
+    await noteShown(db, permit, ids)
+    const thumbnails = await thumbnailsOf(db, permit, ids)
     for (const { remarks: _remarks, reason: _reason, tags, ...entry } of entries) {
       rows.push({ ...entry, tags: tags.map(({ tag }) => tag).join(', '), thumbnail: thumbnails.get(entry.id) ?? null })
     }

@@ -3,7 +3,7 @@ import type { Kysely } from 'kysely'
 import { listCandidatesAfter, type CandidateRow } from '@/db/queries/catalogue'
 import type { DB } from '@/db/schema'
 import type { CandidateState } from '@/db/schema/intake'
-import { revealedTo } from '@/lib/work/grading/may-reveal'
+import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { readCursor, writeCursor } from './candidate-cursor'
 import { candidateScope } from './candidate-scope'
@@ -60,8 +60,14 @@ export async function listCandidates(
   const rows = await listCandidatesAfter(db, candidateScope(permit), { afterId, limit: limit + 1, state })
   const page = rows.slice(0, limit)
   const last = page.at(-1)
+  const candidates = await asListed(db, permit, page)
+  await noteShown(
+    db,
+    permit,
+    candidates.filter(saysJudgement).map(({ id }) => id),
+  )
   return {
-    candidates: await asListed(db, permit, page),
+    candidates,
     nextCursor: rows.length > limit && last ? writeCursor(last.id) : null,
   }
 }
@@ -86,6 +92,11 @@ export async function asListed(
       : { state: row.state, verdict: verdictOf(row), designation: row.designation }
     return { id, name, raDeg, decDeg, ...judged, withheld, ...forLead }
   })
+}
+
+/** Whether the row tells what others or the rule made of the candidate. An open one without a verdict does not. */
+export function saysJudgement({ state, verdict }: ListedCandidate): boolean {
+  return verdict !== null || (state !== null && state !== 'open')
 }
 
 function verdictOf(row: CandidateRow): ListedVerdict | null {

@@ -1,7 +1,8 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listCandidatesAmong, listJudgedAmong } from '@/db/queries/grading'
+import { insertJudgementsShown, listCandidatesAmong, listJudgedAmong } from '@/db/queries/grading'
 import type { DB } from '@/db/schema'
+import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 
 /**
@@ -21,4 +22,18 @@ export async function revealedTo(
       ? await listJudgedAmong(db, campaign.id, viewer.id, candidateIds)
       : await listCandidatesAmong(db, campaign.id, candidateIds),
   )
+}
+
+/**
+ * Notes what a grader is being shown of the others' judgement, before it leaves the server: from then on their own grade of these
+ * candidates stands as they gave it. Leads and viewers see everything by their role, so nothing is noted for them.
+ */
+export async function noteShown(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateIds: readonly number[],
+): Promise<void> {
+  if (permit.role !== 'grader' || candidateIds.length === 0) return
+  const { campaign, viewer } = permit
+  await insertJudgementsShown(db, { campaignId: campaign.id, personId: viewer.id, candidateIds, now: isoTime() })
 }

@@ -8,6 +8,7 @@ import {
   findGradeByUid,
   findStandingFirstGrade,
   insertGrade,
+  isJudgementShown,
   setFirstGradeGiven,
   type CandidateToGrade,
 } from '@/db/queries/grading'
@@ -51,7 +52,8 @@ const CONSENSUS_DELAY_MS = 2000
  *
  * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
  * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
- * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`, 422 no such recipe.
+ * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`,
+ * `judgement-seen`, 422 no such recipe.
  */
 export async function recordGrade(
   db: Kysely<DB>,
@@ -69,6 +71,7 @@ export async function recordGrade(
     const standing = await findStandingFirstGrade(transaction, candidateId, viewer.id)
     const repeat = await isRepeat(transaction, candidateId, viewer.id, input, standing)
     if (standing && repeat) return { row: standing, replaced: null }
+    if (standing) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
     if (!standing) await assertRoom(transaction, candidate, viewer.id, rule)
     const row = await insertGrade(transaction, {
@@ -138,6 +141,19 @@ function saysTheSame(standing: GradeRow, input: GradeInput): boolean {
     standing.remark === input.remark &&
     standing.reason === input.reason &&
     standing.tags === toJson<string[]>(input.tags)
+  )
+}
+
+/** A grader who has seen what the others said cannot change their mind any more. A lead sees everything by role, and may. */
+async function assertUnswayed(
+  transaction: Transaction<DB>,
+  { role, viewer }: CampaignPermit<'grade'>,
+  candidateId: number,
+): Promise<void> {
+  if (role !== 'grader' || !(await isJudgementShown(transaction, candidateId, viewer.id))) return
+  throw conflict(
+    'judgement-seen',
+    "You have seen the others' grades of this candidate since, so yours stands as you gave it.",
   )
 }
 

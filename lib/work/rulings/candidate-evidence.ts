@@ -11,7 +11,7 @@ import { fromJson, type IsoTime } from '@/db/schema/values'
 import { notFound } from '@/lib/platform/problems/problem'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
-import { revealedTo } from '@/lib/work/grading/may-reveal'
+import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import { describeRuling } from './describe-ruling'
@@ -116,6 +116,7 @@ export async function candidateEvidence(
   if (!candidate) throw notFound('candidate')
   const pictures = (await picturesOf(db, permit.campaign, [candidateId])).get(candidateId)
   const revealed = (await revealedTo(db, permit, [candidateId])).has(candidateId)
+  if (revealed) await noteShown(db, permit, [candidateId])
   return {
     id: candidate.id,
     name: candidate.name,
