@@ -3,10 +3,14 @@ import { config } from '@/lib/platform/config/config'
 import { database } from '@/lib/platform/database'
 import { startJobLoop } from '@/lib/platform/jobs/run-jobs'
 import { log } from '@/lib/platform/log'
+import { blobs } from '@/lib/platform/storage/blobs'
 import { jobLoops } from './job-handlers'
 import { makeSetupCode } from './people/setup-code'
 
 const shared = globalThis as typeof globalThis & { ringsideStarted?: boolean }
+
+/** A delivery that has not grown for so long is one that a kill cut off. */
+const DAY_MS = 86_400_000
 
 /** Opens and migrates the database, then works through the jobs for as long as the process lives. */
 export async function startServer(): Promise<void> {
@@ -18,6 +22,8 @@ export async function startServer(): Promise<void> {
   const code = await makeSetupCode(db)
   // Plain, not through the log: a person looks for it, at every level of the log.
   if (code) console.log(`First visit: open ${config().siteUrl}/welcome and enter the one-time code ${code}`)
+  const swept = await blobs().sweepTemporary(new Date(Date.now() - DAY_MS))
+  if (swept > 0) log.info({ swept }, 'half-written deliveries removed')
   const loops = jobLoops.map((handlers) => startJobLoop(db, handlers))
   process.once('SIGTERM', () => void Promise.all(loops.map((stop) => stop())))
   log.info({ data: config().dataFolder, site: config().siteUrl }, 'ringside started')

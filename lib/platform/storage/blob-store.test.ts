@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto'
-import { mkdtemp, readdir, rm } from 'node:fs/promises'
+import { mkdir, mkdtemp, readdir, rm, utimes, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
@@ -60,6 +60,25 @@ describe('BlobStore', () => {
     await expect(tooMuch).rejects.toThrow('too much')
     expect(read).toBe(6)
     expect(await leftovers()).toEqual([])
+  })
+
+  it('sweeps what a killed process left half written, and nothing that may still be written or is whole', async () => {
+    const { sha256 } = await store.put(new TextEncoder().encode('abc'))
+    await mkdir(path.join(folder, 'incoming'), { recursive: true })
+    for (const [name, day] of [
+      ['left', 1],
+      ['at-work', 3],
+    ] as const) {
+      await writeFile(path.join(folder, 'incoming', name), 'half')
+      await utimes(path.join(folder, 'incoming', name), new Date(2026, 0, day), new Date(2026, 0, day))
+    }
+    expect(await store.sweepTemporary(new Date(2026, 0, 2))).toBe(1)
+    expect(await leftovers()).toEqual(['at-work'])
+    expect(await store.has(sha256)).toBe(true)
+  })
+
+  it('has nothing to sweep where nothing was delivered yet', async () => {
+    expect(await store.sweepTemporary(new Date())).toBe(0)
   })
 
   it.each(['../../etc/passwd', 'abc', ''])(

@@ -1,6 +1,6 @@
 import { createHash, randomUUID } from 'node:crypto'
 import { constants, createReadStream, type ReadStream } from 'node:fs'
-import { access, mkdir, open, readFile, rename, stat, unlink } from 'node:fs/promises'
+import { access, mkdir, open, readdir, readFile, rename, stat, unlink } from 'node:fs/promises'
 import path from 'node:path'
 
 /**
@@ -85,6 +85,23 @@ export class BlobStore {
 
   stream(sha256: string): ReadStream {
     return createReadStream(this.pathOf(sha256))
+  }
+
+  /** Removes what a killed process left half written: temporary files not written to since `before`. Returns how many. */
+  async sweepTemporary(before: Date): Promise<number> {
+    const names = await readdir(this.temporaryFolder).catch(() => [])
+    let removed = 0
+    for (const name of names) {
+      const temporary = path.join(this.temporaryFolder, name)
+      // Another process may adopt or remove it at the same moment.
+      const found = await stat(temporary).catch(() => null)
+      if (!found?.isFile() || found.mtime >= before) continue
+      removed += await unlink(temporary).then(
+        () => 1,
+        () => 0,
+      )
+    }
+    return removed
   }
 
   private async temporaryName(): Promise<string> {
