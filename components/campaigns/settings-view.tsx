@@ -1,5 +1,6 @@
 import type { FormAction } from '@/components/people/use-kept-form'
 import type { RuleVersion } from '@/lib/work/campaigns/change-settings'
+import { ButtonLink } from '@/components/ui/button'
 import { FormSection } from './form-section'
 import { counted } from './in-words'
 import { PageHead } from './page-head'
@@ -9,11 +10,13 @@ import { NamePatternForm, RuleForm } from './settings-forms'
 /** What a lead may change later, and what stays as it was made. */
 export function SettingsView({
   campaign,
+  picturesHref,
   versions,
   changeRule,
   changeNamePattern,
 }: {
   campaign: { name: string; survey: string; acronym: string; bands: string[]; namePattern: string | null }
+  picturesHref: string
   versions: RuleVersion[]
   changeRule: FormAction
   changeNamePattern: FormAction
@@ -47,6 +50,14 @@ export function SettingsView({
       </FormSection>
       <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
         <RuleHistory versions={versions} />
+      </FormSection>
+      <FormSection
+        title="Pictures"
+        about="The recipe that makes pictures of cutouts: views and their order, brightness, weights of the bands, close field, north up."
+      >
+        <ButtonLink href={picturesHref} className="self-start">
+          Change how pictures are made
+        </ButtonLink>
       </FormSection>
       <FormSection
         title="File names"

@@ -1,3 +1,4 @@
+import { closeFactor } from '@/lib/science/imaging/close-field'
 import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
 import { StampOverlay } from './stamp-overlay'
 
@@ -13,6 +14,7 @@ export function StampFigure({
   geometry,
   className = '',
   overlay = true,
+  fieldArcsec = null,
 }: {
   src: string | null
   alt: string
@@ -21,7 +23,11 @@ export function StampFigure({
   geometry: StampGeometry | null
   className?: string
   overlay?: boolean
+  /** Side of the part in the middle that is shown; null shows the whole picture, as does a picture of unknown scale. */
+  fieldArcsec?: number | null
 }) {
+  const closer =
+    fieldArcsec === null ? 1 : closeFactor(Math.max(width, height), geometry?.pixelScaleArcsec ?? null, fieldArcsec)
   return (
     <div className={`relative aspect-square overflow-hidden bg-black ${className}`}>
       {src ? (
@@ -31,6 +37,7 @@ export function StampFigure({
           width={width}
           height={height}
           className="pixelated absolute inset-0 size-full object-contain"
+          style={closer > 1 ? { transform: `scale(${closer})` } : undefined}
           draggable={false}
         />
       ) : (
@@ -38,7 +45,9 @@ export function StampFigure({
           No picture yet
         </p>
       )}
-      {overlay && src && geometry ? <StampOverlay width={width} height={height} geometry={geometry} /> : null}
+      {overlay && src && geometry ? (
+        <StampOverlay width={width / closer} height={height / closer} geometry={geometry} />
+      ) : null}
     </div>
   )
 }

@@ -14,6 +14,7 @@ export default async function SettingsPage({ params }: PageProps<'/campaigns/[sl
   return (
     <SettingsView
       campaign={{ ...campaign, bands: fromJson(campaign.bands), namePattern: campaign.name_pattern }}
+      picturesHref={`/campaigns/${slug}/settings/pictures`}
       versions={await listRuleVersions(db, permit)}
       changeRule={changeRuleAction.bind(null, slug)}
       changeNamePattern={changeNamePatternAction.bind(null, slug)}

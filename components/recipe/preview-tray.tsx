@@ -1,0 +1,69 @@
+import { StampFigure } from '@/components/ui/stamp-figure'
+import type { SamplePreview } from '@/lib/work/stamps/preview-recipe'
+
+/** The samples on the black tray: the chosen view large, every other as a slide below it. */
+export function PreviewTray({
+  samples,
+  view,
+  fieldArcsec,
+  pending,
+  onChoose,
+}: {
+  samples: SamplePreview[]
+  view: string
+  /** null: the whole cutout. */
+  fieldArcsec: number | null
+  pending: boolean
+  onChoose: (view: string) => void
+}) {
+  return (
+    <div
+      aria-busy={pending}
+      className="night grid grid-cols-1 gap-3 rounded-tray bg-tray p-3 text-text min-[440px]:grid-cols-2 xl:grid-cols-3"
+    >
+      {samples.map((sample) => {
+        const shown = sample.views.find(({ key }) => key === view) ?? null
+        return (
+          <figure key={sample.id} className="flex min-w-0 flex-col gap-1.5">
+            <StampFigure
+              src={shown?.url ?? null}
+              alt={`${shown?.label ?? ''} of ${sample.name}`}
+              width={shown?.width ?? 1}
+              height={shown?.height ?? 1}
+              geometry={shown?.geometry ?? null}
+              fieldArcsec={fieldArcsec}
+            />
+            <figcaption className="min-w-0 text-note text-tray-text">
+              <span className="figures block truncate text-text">{sample.name}</span>
+              {sample.fault ?? shown?.note ?? null}
+              {shown === null && sample.fault === null ? 'This view is not shown.' : null}
+            </figcaption>
+            <div className="grid grid-cols-8 gap-1">
+              {sample.views.map(({ key, label, url, width, height }) => (
+                <button
+                  key={key}
+                  type="button"
+                  title={label}
+                  aria-label={`Tune ${label}`}
+                  aria-pressed={key === view}
+                  onClick={() => onChoose(key)}
+                  className="min-h-6 rounded-key outline-2 outline-offset-1 outline-transparent aria-pressed:outline-text"
+                >
+                  <StampFigure
+                    src={url}
+                    alt=""
+                    width={width}
+                    height={height}
+                    geometry={null}
+                    overlay={false}
+                    className="[&>p]:hidden"
+                  />
+                </button>
+              ))}
+            </div>
+          </figure>
+        )
+      })}
+    </div>
+  )
+}
