@@ -6,7 +6,7 @@ import { STEPS, type SliderScale } from './slider-scales'
 
 /** A thin line and a round handle, the same in every browser; the whole height takes the finger. */
 const SLIDER = [
-  'h-8 w-full touch-none cursor-pointer appearance-none rounded-key bg-transparent disabled:opacity-40 md:h-6',
+  'h-8 w-full touch-none cursor-pointer appearance-none rounded-key bg-transparent aria-disabled:opacity-40 md:h-6',
   '[&::-webkit-slider-runnable-track]:h-0.5 [&::-webkit-slider-runnable-track]:bg-edge',
   '[&::-webkit-slider-thumb]:-mt-[9px] [&::-webkit-slider-thumb]:size-5 [&::-webkit-slider-thumb]:appearance-none',
   '[&::-webkit-slider-thumb]:rounded-full [&::-webkit-slider-thumb]:bg-text',
@@ -40,13 +40,13 @@ export function LightSlider({
     const follow = () => {
       if (!input.current || !figure.current) return
       const value = read(light)
-      const text = value === null ? '' : scale.figure(value)
+      const text = value === null ? '–' : scale.figure(value)
       if (figure.current.textContent === text) return
       figure.current.textContent = text
-      input.current.disabled = value === null
-      if (value === null) return
-      input.current.value = String(scale.place(value))
+      // Not `disabled`, which would drop the focus of whoever opens Light before the pixels are here.
+      input.current.setAttribute('aria-disabled', String(value === null))
       input.current.setAttribute('aria-valuetext', text)
+      if (value !== null) input.current.value = String(scale.place(value))
     }
     follow()
     return light.subscribe(follow)
@@ -63,7 +63,9 @@ export function LightSlider({
         min={0}
         max={STEPS}
         defaultValue={0}
-        onInput={(event) => write(light, scale.value(Number(event.currentTarget.value)))}
+        onInput={(event) => {
+          if (read(light) !== null) write(light, scale.value(Number(event.currentTarget.value)))
+        }}
         className={SLIDER}
       />
       <output ref={figure} htmlFor={id} className="figures text-right text-note text-mute" />

@@ -40,6 +40,6 @@ export const WHITE_SCALE: SliderScale = { ...logarithmic(1, 30_000), figure: sig
 export const SOFTENING_SCALE: SliderScale = { ...logarithmic(0.2, 300), figure: sigmaFigure }
 export const WEIGHT_SCALE: SliderScale = {
   place: (value) => clamp(Math.round((STEPS * value) / 3)),
-  value: (place) => Math.round((300 * place) / STEPS) / 100,
+  value: (place) => (3 * place) / STEPS,
   figure: (value) => `×${value.toFixed(2)}`,
 }
