@@ -140,8 +140,11 @@ export async function replaceOthersOfName(
     .execute()
   if (others.length === 0) return []
   const ids = others.map(({ id }) => id)
-  await db.updateTable('file').set({ replaced_by: fileId, updated_at: now }).where('id', 'in', ids).execute()
-  return others.filter((other) => other.replaced_by === null).map(({ id }) => id)
+  await db.updateTable('file').set({ replaced_by: fileId }).where('id', 'in', ids).execute()
+  const inUse = others.filter((other) => other.replaced_by === null).map(({ id }) => id)
+  // The time of those that were replaced before stays, so that the last in use can be told.
+  if (inUse.length > 0) await db.updateTable('file').set({ updated_at: now }).where('id', 'in', inUse).execute()
+  return inUse
 }
 
 /** Back to 'stored', to be read again. */
