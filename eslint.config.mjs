@@ -16,6 +16,9 @@ const zones = [
   zone('./db', './lib/work', 'Queries know no use cases: pass plain values in.'),
   zone('./lib/platform', './lib/work', 'lib/platform carries lib/work: pass handlers in.'),
   zone('./lib/platform', './app', 'lib/platform knows no pages.'),
+  zone('./lib/platform', './components', 'lib/platform knows no components.'),
+  zone('./db', './lib/science', 'Queries know no science: pass numbers in.'),
+  zone('./components', './app', 'A component is shown by pages and knows none: pass what it needs.'),
   zone('./lib/work', './app', 'A use case knows no page: return data and let app/ shape it.'),
   zone('./lib/work', './components', 'A use case knows no component.'),
   zone('./components', './db', 'Components take plain objects: have the page read them through lib/work.', [
@@ -28,8 +31,10 @@ const zones = [
     './!(migrations|node_modules)/**/*',
     'Migrations are frozen: they import kysely and nothing that changes.',
   ),
-  ...['app', 'components', 'lib', 'db', 'migrations'].map((target) =>
-    zone(`./${target}/**/!(*.test).{ts,tsx}`, './tests', 'Product code never imports tests.'),
+  ...['app', 'components', 'lib', 'db', 'migrations'].flatMap((target) =>
+    ['tests', 'fixtures'].map((kept) =>
+      zone(`./${target}/**/!(*.test|_*).{ts,tsx}`, `./${kept}`, `Product code never imports ${kept}.`),
+    ),
   ),
   ...ROOMS.flatMap((room, index) =>
     ROOMS.slice(index + 1).map((below) =>
@@ -50,7 +55,6 @@ export default defineConfig([
     settings: { 'import/resolver': { typescript: { project: './tsconfig.json' } } },
     rules: {
       'import/no-restricted-paths': ['error', { zones }],
-      'import/no-cycle': ['error', { maxDepth: 6, ignoreExternal: true }],
       '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_', varsIgnorePattern: '^_' }],
       '@typescript-eslint/consistent-type-imports': ['error', { fixStyle: 'inline-type-imports' }],
       '@next/next/no-img-element': 'off',
@@ -63,6 +67,42 @@ export default defineConfig([
       'no-restricted-properties': [
         'error',
         { object: 'process', property: 'env', message: 'Settings are read once, in lib/platform/config/config.ts.' },
+      ],
+      'no-restricted-syntax': [
+        'error',
+        {
+          selector: 'VariableDeclarator[init.name="process"]',
+          message: 'Settings are read once, in lib/platform/config/config.ts.',
+        },
+      ],
+    },
+  },
+  {
+    files: ['lib/science/**/*.ts'],
+    // Inflating is left to Node's zlib, so reading FITS runs on the server and in workers only.
+    ignores: ['**/*.test.ts', '**/_*.ts', 'lib/science/fits/gunzip.ts', 'lib/science/fits/tiles/gzip-tile.ts'],
+    rules: {
+      '@typescript-eslint/no-restricted-imports': [
+        'error',
+        {
+          patterns: [
+            {
+              group: ['node:*', 'next', 'next/*', 'kysely', 'react'],
+              message: 'lib/science is pure: no files, clock, network, database or page.',
+            },
+          ],
+        },
+      ],
+      'no-restricted-syntax': [
+        'error',
+        {
+          selector: 'NewExpression[callee.name="Date"][arguments.length=0]',
+          message: 'lib/science has no clock: pass the time in.',
+        },
+      ],
+      'no-restricted-globals': [
+        'error',
+        { name: 'performance', message: 'lib/science has no clock: pass the time in.' },
       ],
     },
   },

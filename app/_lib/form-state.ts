@@ -1,15 +1,10 @@
 import { unstable_rethrow } from 'next/navigation'
 import { z } from 'zod'
+import type { FormState } from '@/components/ui/form-state'
 import { log } from '@/lib/platform/log'
 import { Problem } from '@/lib/platform/problems/problem'
 
-/** What a form action answers: a sentence, the faults by field, and what was typed, so that nothing is lost. */
-export interface FormState {
-  done?: string
-  message?: string
-  errors?: Record<string, string>
-  values?: Record<string, string>
-}
+export type { FormState }
 
 function textValues(form: FormData): Record<string, string> {
   const values: Record<string, string> = {}

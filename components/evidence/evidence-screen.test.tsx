@@ -1,7 +1,7 @@
 import { render, screen, within } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
 import { describe, expect, it, vi } from 'vitest'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
 import { EvidenceScreen } from './evidence-screen'
 import { arithmeticInWords, thresholdsInWords } from './verdict-arithmetic'

@@ -1,7 +1,7 @@
 'use client'
 
 import { signIn } from 'next-auth/react'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
 import { enterWith } from '@/components/welcome/enter-with'

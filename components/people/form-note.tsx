@@ -1,4 +1,4 @@
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import { Notice } from '@/components/ui/notice'
 
 /** What a form has to say after it was sent. */

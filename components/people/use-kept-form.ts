@@ -2,7 +2,7 @@
 
 import { unstable_rethrow } from 'next/navigation'
 import { startTransition, useActionState, useEffect, useRef, type FormEvent } from 'react'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 
 export type FormAction = (state: FormState, form: FormData) => Promise<FormState>
 

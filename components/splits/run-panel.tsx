@@ -1,7 +1,7 @@
 'use client'
 
 import { useActionState } from 'react'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import { counted, moment } from '@/components/campaigns/in-words'
 import { FormNote } from '@/components/people/form-note'
 import { Button } from '@/components/ui/button'

@@ -1,7 +1,7 @@
 import { render, screen, within } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
 import { describe, expect, it, vi, beforeEach } from 'vitest'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import type { CandidateEvidence, EvidenceRuling, Judgement } from '@/lib/work/rulings/candidate-evidence'
 import type { NewestRun } from '@/lib/work/consensus/newest-run'
 import { SplitsScreen, type SplitsScreenProps } from './splits-screen'

@@ -1,7 +1,7 @@
 'use client'
 
 import { signIn } from 'next-auth/react'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import { FormNote } from '@/components/people/form-note'
 import { PasswordField } from '@/components/people/password-field'
 import { useKeptForm, type FormAction } from '@/components/people/use-kept-form'

@@ -1,7 +1,7 @@
 'use client'
 
 import { signIn } from 'next-auth/react'
-import type { FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/components/ui/form-state'
 import { PasswordField } from '@/components/people/password-field'
 import { FormNote } from '@/components/people/form-note'
 import { useKeptForm } from '@/components/people/use-kept-form'
