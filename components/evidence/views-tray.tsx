@@ -72,6 +72,7 @@ export function ViewsTray({
             {view.label}
             {view.note ? <span className="text-text">. {view.note}</span> : null}
           </figcaption>
+          <LightSection light={light} keys={keys} className="px-0.5 pt-1" />
         </div>
         <ol aria-label="Views" className="flex gap-2 overflow-x-auto p-0.5 sm:flex-col sm:gap-1 sm:overflow-x-visible">
           {views.map((slide, index) => (
@@ -106,7 +107,6 @@ export function ViewsTray({
             </li>
           ))}
         </ol>
-        <LightSection light={light} keys={keys} className="px-1 sm:col-span-2" />
       </figure>
     </div>
   )

@@ -14,7 +14,7 @@ function makePlanes(): Uint8Array<ArrayBuffer> {
   const { bands, width, height } = simulateCandidate('lens-arc', 3)
   const planes = bands.map(({ band, data }) => {
     const { background, sigma } = estimateNoise(data, width, height)
-    return { band, width, height, data, background, noise: sigma, pixelScaleArcsec: null }
+    return { role: 'band' as const, band, width, height, data, background, noise: sigma, pixelScaleArcsec: null }
   })
   return new Uint8Array(gzipSync(encodePlanes(planes, defaultRecipe(['g', 'r', 'i']))))
 }

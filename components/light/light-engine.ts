@@ -73,7 +73,7 @@ export class LightEngine {
     const { drawn } = light
     // White follows the weights.
     if (drawn?.view !== view || drawn.own.white !== own.white || light.status !== 'live') {
-      const bands = planes.planes.map(({ band }) => band)
+      const bands = planes.planes.flatMap(({ role, band }) => (role === 'band' ? band : []))
       light.setStatus('live', { view, colour: sheet.colour, bands, own })
     }
   }

@@ -1,11 +1,12 @@
 /** Pictures drawn from coded planes are those of the recipe; see render-views.test.ts for what those are checked against. */
 import { describe, expect, it } from 'vitest'
-import { simulateCandidate } from '../lensing/simulate-candidate'
+import { SIMULATED_KINDS, simulateCandidate } from '../lensing/simulate-candidate'
+import { derivedPlanes } from './derived-planes'
 import { drawSheet, type DrawOptions } from './draw-sheet'
-import { decodePlanes, encodePlanes } from './plane-codec'
+import { decodePlanes, encodePlanes, type PlaneToEncode } from './plane-codec'
 import { estimateNoise } from './noise'
 import type { BandPlane } from './normalise-planes'
-import { defaultRecipe } from './recipe'
+import { defaultRecipe, type Recipe } from './recipe'
 import { MISSING_GREY } from './render-grey'
 import { renderViews } from './render-views'
 import { viewSheet, viewSource, type ViewSheet } from './view-sheet'
@@ -17,16 +18,16 @@ function usualCandidate(unit: number): BandPlane[] {
   return bands.map(({ band, data }) => ({ band, width, height, data: data.map((value) => value * factor) }))
 }
 
-function coded(planes: BandPlane[], recipe: ReturnType<typeof defaultRecipe>) {
-  return decodePlanes(
-    encodePlanes(
-      planes.map((plane) => {
-        const { background, sigma } = estimateNoise(plane.data, plane.width, plane.height)
-        return { ...plane, background, noise: sigma, pixelScaleArcsec: plane.pixelScaleArcsec ?? null }
-      }),
-      recipe,
-    ),
-  )
+function coded(planes: BandPlane[], recipe: Recipe) {
+  const bands = planes.map((plane): PlaneToEncode => {
+    const { background, sigma: noise } = estimateNoise(plane.data, plane.width, plane.height)
+    return { role: 'band', ...plane, background, noise, pixelScaleArcsec: plane.pixelScaleArcsec ?? null }
+  })
+  const derived = derivedPlanes(planes, recipe).map(({ role, plane }): PlaneToEncode => {
+    const { band, width, height, values: data, sigma } = plane
+    return { role, band, width, height, data, background: 0, noise: 1, bandNoise: sigma, pixelScaleArcsec: null }
+  })
+  return decodePlanes(encodePlanes([...bands, ...derived], recipe))
 }
 
 const limitsOf = ({ blackSigma, whiteSigma, softeningSigma }: ViewSheet): DrawOptions => ({
@@ -50,7 +51,7 @@ function sheetOf(key: string, planes: BandPlane[], recipe = defaultRecipe(['g', 
   return viewSheet(source, decoded.recipe)
 }
 
-/** Share of pixels by the largest difference of a channel, and that difference. */
+/** The largest difference of a channel, in counts. */
 function difference(live: Uint8ClampedArray, pixels: Uint8Array, channels: number) {
   let worst = 0
   for (let i = 0; i < pixels.length; i++) {
@@ -73,6 +74,19 @@ describe.each([1e-13, 1, 1e4])('at the recipe’s own limits, with noise of %s',
       expect(difference(draw(sheet), view.pixels, view.channels)).toBeLessThanOrEqual(2)
     },
   )
+})
+
+describe.each(SIMULATED_KINDS)('of %s', (kind) => {
+  const { bands, width, height } = simulateCandidate(kind, 2)
+  const planes = bands.map(({ band, data }) => ({ band, width, height, data }))
+
+  it('every view is the PNG’s picture within two counts', () => {
+    for (const view of renderViews(planes, defaultRecipe(['g', 'r', 'i']))) {
+      expect([view.key, difference(draw(sheetOf(view.key, planes)), view.pixels, view.channels)]).toSatisfy(
+        ([, worst]: [string, number]) => worst <= 2,
+      )
+    }
+  })
 })
 
 describe('a sheet', () => {

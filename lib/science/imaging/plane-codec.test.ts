@@ -8,7 +8,7 @@ const RECIPE = defaultRecipe(['g', 'r'])
 function noisyPlane(band: string, width: number, height: number, noise: number, background = 0): PlaneToEncode {
   const random = new SeededRandom(width + height)
   const data = Float32Array.from({ length: width * height }, () => background + noise * random.normal())
-  return { band, width, height, data, background, noise, pixelScaleArcsec: 0.2 }
+  return { role: 'band', band, width, height, data, background, noise, pixelScaleArcsec: 0.2 }
 }
 
 const roundTrip = (planes: PlaneToEncode[]) => decodePlanes(encodePlanes(planes, RECIPE))

@@ -20,7 +20,11 @@ const CODES_PER_E = 1024
 const MOST_SIGMA = 1e12
 const NO_DATA = 0xffff
 
+/** The pixels of a band as they are, or what a view needs that was made of them (derived-planes.ts). */
+export type PlaneRole = 'band' | 'residual' | 'blue'
+
 export interface PlaneToEncode {
+  role: PlaneRole
   band: string
   width: number
   height: number
@@ -29,11 +33,14 @@ export interface PlaneToEncode {
   /** Sky level and noise in the unit of the file. A noise of 0 means that all pixels are equal or none is finite. */
   background: number
   noise: number
+  /** Of the band that a derived plane, which is in units of its noise already, was made of. */
+  bandNoise?: number
   pixelScaleArcsec: number | null
 }
 
 /** The values are in units of the noise, as all views want them. */
 export interface DecodedPlane extends NormalisedPlane {
+  role: PlaneRole
   background: number
   pixelScaleArcsec: number | null
 }
@@ -59,8 +66,8 @@ export function encodePlanes(planes: readonly PlaneToEncode[], recipe: Recipe): 
   const head: Head = {
     version: VERSION,
     recipe,
-    planes: planes.map(({ band, width, height, background, noise, pixelScaleArcsec }, k) => {
-      return { band, width, height, background, noise, pixelScaleArcsec, lowest: coded[k].lowest }
+    planes: planes.map(({ data: _pixels, ...facts }, k) => {
+      return { ...facts, lowest: coded[k].lowest }
     }),
   }
   const text = new TextEncoder().encode(JSON.stringify(head))
@@ -127,7 +134,7 @@ function readHead(bytes: Uint8Array): Head {
 }
 
 function decodePlane(plane: Head['planes'][number], low: Uint8Array, high: Uint8Array): DecodedPlane {
-  const { band, width, height, background, noise, pixelScaleArcsec, lowest } = plane
+  const { role, band, width, height, background, noise, bandNoise, pixelScaleArcsec, lowest } = plane
   const values = new Float32Array(low.length)
   const table = valueTable(lowest, high)
   let missing = 0
@@ -137,7 +144,8 @@ function decodePlane(plane: Head['planes'][number], low: Uint8Array, high: Uint8
     values[i] = code === NO_DATA ? Number.NaN : table[code]
   }
   const state = missing === values.length ? 'empty' : noise > 0 ? 'usable' : 'constant'
-  return { band, width, height, values, sigma: noise, missing, state, background, pixelScaleArcsec }
+  const sigma = bandNoise ?? noise
+  return { role, band, width, height, values, sigma, missing, state, background, pixelScaleArcsec }
 }
 
 /** Values of the codes that occur, so that sinh is worked out once a code and not once a pixel. */

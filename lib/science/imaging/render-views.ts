@@ -3,7 +3,7 @@
  * flat, and a note says why.
  */
 import { blueView, coreView, residualView } from './arc-views'
-import { matchScales } from './match-scales'
+import { commonGrid } from './common-grid'
 import { normalisePlane, type BandPlane, type NormalisedPlane } from './normalise-planes'
 import { orientPlanes } from './orient-planes'
 import { bandOfView, type Recipe } from './recipe'
@@ -46,20 +46,6 @@ export function renderViews(given: BandPlane[], recipe: Recipe): RenderedView[] 
   const first = views.find((view) => view.key === 'deep') ?? views[0]
   if (noColour !== null && first) first.note = [noColour, first.note].filter(Boolean).join(' ')
   return views
-}
-
-/**
- * Brings bands to one grid for the combined views.
- * @param native the same planes normalised.
- * @returns all planes, `group` those of the commonest size, which the combined views are made of, and what was resampled.
- */
-export function commonGrid(
-  planes: BandPlane[],
-  native: NormalisedPlane[],
-): { all: NormalisedPlane[]; group: NormalisedPlane[]; note: string | null } {
-  const matched = matchScales(planes)
-  const all = matched.planes.map((plane, k) => (plane === planes[k] ? native[k] : normalisePlane(plane)))
-  return { all, group: largestGroup(all), note: matched.note }
 }
 
 /** What the combined views are made of. */
@@ -128,19 +114,4 @@ function bandView(plane: NormalisedPlane | null, recipe: Recipe): RenderedView |
       ? renderGrey(values, width, height, recipe.band)
       : new Uint8Array(width * height).fill(MISSING_GREY)
   return { key: `band:${plane.band}`, width, height, channels: 1, pixels, note: bandNote(plane) }
-}
-
-/** The planes that share the commonest size, in order; of equally common sizes that with the most pixels. */
-function largestGroup(planes: NormalisedPlane[]): NormalisedPlane[] {
-  const groups = new Map<string, NormalisedPlane[]>()
-  for (const plane of planes) {
-    const size = `${plane.width}x${plane.height}`
-    groups.set(size, [...(groups.get(size) ?? []), plane])
-  }
-  const usable = (group: NormalisedPlane[]) => group.filter((plane) => plane.state === 'usable').length
-  return [...groups.values()].reduce<NormalisedPlane[]>((best, group) => {
-    if (best.length === 0) return group
-    const more = usable(group) - usable(best) || group[0].values.length - best[0].values.length
-    return more > 0 ? group : best
-  }, [])
 }

@@ -2,17 +2,15 @@
  * A view before its brightness is drawn: what stays as it is while black, white, softening and the curve are moved. The same
  * steps as in render-views.ts up to there, so a sheet drawn at the recipe's own limits is the recipe's picture.
  */
-import { bluePlane } from './arc-views'
-import { removeLensLight } from './lens-light'
+import { commonGrid } from './common-grid'
 import type { NormalisedPlane } from './normalise-planes'
 import type { DecodedPlane } from './plane-codec'
 import { bandOfView, extraLimits, type ColourLimits, type LimitsSigma, type Recipe } from './recipe'
 import { colourChannels } from './render-colour'
 import { deepValues } from './render-deep'
-import { commonGrid } from './render-views'
 import { whiteLevel } from './white-level'
 
-/** What a view is made of; costly to make (the galaxy's light is modelled), so kept by whoever draws. */
+/** What a view is made of, kept by whoever draws. */
 export interface ViewSource {
   key: string
   width: number
@@ -44,24 +42,26 @@ export interface ViewSheet {
 export function viewSource(key: string, planes: DecodedPlane[], recipe: Recipe): ViewSource | null {
   const band = bandOfView(key)
   if (band !== null) {
-    const plane = planes.find((one) => one.band === band)
+    const plane = planes.find((one) => one.role === 'band' && one.band === band)
     return plane?.state === 'usable' ? greySource(key, plane, plane.values, recipe.band) : null
   }
-  const usable = usableGroup(planes)
+  const usable = usableGroup(planes.filter(({ role }) => role === 'band'))
   const first = usable[0]
   if (!first) return null
   const { residual, blue, core } = extraLimits(recipe)
   if (key === 'deep') return greySource(key, first, deepValues(usable, recipe.deep), recipe.deep)
   if (key === 'residual') {
-    const { residuals } = removeLensLight(usable)
-    return usable.length > 1
+    const residuals = planes.filter(({ role }) => role === 'residual')
+    if (residuals.length === 0) return null
+    return residuals.length > 1
       ? colourSource(key, residuals, residual)
       : greySource(key, first, residuals[0].values, residual)
   }
   if (usable.length < 2) return null
   if (key === 'colour') return colourSource(key, usable, recipe.colour)
   if (key === 'core') return colourSource(key, usable, core)
-  if (key === 'blue') return greySource(key, first, deepValues([bluePlane(usable).plane], blue), blue)
+  const difference = planes.find(({ role }) => role === 'blue')
+  if (key === 'blue' && difference) return greySource(key, first, deepValues([difference], blue), blue)
   return null
 }
 
