@@ -72,6 +72,6 @@ describe('a key at the bench', () => {
     expect(commandOf(press('f'), 'page', 'tags')).toEqual({ do: 'choose', index: 10 })
     expect(commandOf(press('n'), 'page', 'tags')).toEqual({ do: 'grade', letter: 'N' })
     expect(commandOf(press('Escape'), 'page', 'tags')).toEqual({ do: 'close' })
-    expect(commandOf(press('f'), 'page', null)).toBeNull()
+    expect(commandOf(press('f'), 'page', null)).toEqual({ do: 'light', light: 'field' })
   })
 })

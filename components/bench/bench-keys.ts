@@ -85,7 +85,7 @@ export function commandOf(event: Pressed, focus: FocusKind, chooser: Chooser): C
   if (focus === 'text' || event.isComposing) return null
   if (focus === 'slider' && SLIDER_KEYS.includes(event.key)) return null
   const light = lightCommandOf(event)
-  if (light && !(chooser && light === 'reset')) return { do: 'light', light }
+  if (light && !(chooser && (light === 'reset' || light === 'field'))) return { do: 'light', light }
   if (event.repeat) return null
   if (event.ctrlKey || event.altKey || event.metaKey || (event.shiftKey && event.key !== '?')) return null
   if (focus === 'control' && (event.key === ' ' || event.key === 'Enter')) return null

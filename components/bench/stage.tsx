@@ -52,7 +52,8 @@ export function Stage({
             planesUrl={missing ? null : candidate.planesUrl}
             view={view?.key ?? ''}
             size={view?.url && !missing ? view : null}
-            geometry={candidate.geometry}
+            geometry={view?.geometry ?? null}
+            closeFieldArcsec={candidate.closeFieldArcsec}
             scrolls={false}
           >
             {candidate.views.map(({ key, label, url, width, height }) =>

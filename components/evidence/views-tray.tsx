@@ -34,7 +34,7 @@ export function ViewsTray({
   /** A key is held that shows the view before. */
   blinking: boolean
 }) {
-  const { views, geometry } = pictures
+  const { views } = pictures
   const [held, setHeld] = useState(false)
   const [before, setBefore] = useState({ chosen, previous: chosen })
   if (before.chosen !== chosen) setBefore({ chosen, previous: before.chosen })
@@ -56,7 +56,8 @@ export function ViewsTray({
               planesUrl={view.url ? pictures.planesUrl : null}
               view={view.key}
               size={view.url ? view : null}
-              geometry={geometry}
+              geometry={view.geometry}
+              closeFieldArcsec={pictures.closeFieldArcsec}
               scrolls
             >
               <StampFigure

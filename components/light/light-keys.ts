@@ -1,7 +1,8 @@
 /** Keys of Light, the same wherever a candidate is looked at. */
 import type { LightStore } from './light-store'
 
-export type LightCommand = 'toggle' | 'reset' | 'invert' | 'closer' | 'farther' | 'left' | 'right' | 'up' | 'down'
+export type LightCommand =
+  'toggle' | 'field' | 'reset' | 'invert' | 'closer' | 'farther' | 'left' | 'right' | 'up' | 'down'
 
 interface Pressed {
   key: string
@@ -13,7 +14,7 @@ interface Pressed {
   isComposing: boolean
 }
 
-const ONCE: Record<string, LightCommand> = { l: 'toggle', i: 'invert', '0': 'reset' }
+const ONCE: Record<string, LightCommand> = { l: 'toggle', f: 'field', i: 'invert', '0': 'reset' }
 /** Shifted on many layouts, and held down to go on. */
 const AGAIN: Record<string, LightCommand> = { '+': 'closer', '=': 'closer', '-': 'farther', _: 'farther' }
 const MOVES: Record<string, LightCommand> = {
@@ -37,6 +38,7 @@ const MOVE = 0.15
 
 export function runLight(light: LightStore, command: LightCommand): void {
   if (command === 'toggle') light.setOpen(!light.open, true)
+  if (command === 'field') light.setClose(!light.close)
   if (command === 'reset') light.reset()
   if (command === 'invert') light.change({ invert: !light.settings.invert })
   if (command === 'closer') light.zoom.step(1)
@@ -50,6 +52,7 @@ export function runLight(light: LightStore, command: LightCommand): void {
 /** For tables of keys. */
 export const LIGHT_KEYS: { keys: string[]; does: string }[] = [
   { keys: ['L'], does: 'light: black, white and softening by arrow keys' },
+  { keys: ['F'], does: 'field of view: close, or the whole cutout' },
   { keys: ['I'], does: 'invert' },
   { keys: ['+', '-'], does: 'closer, farther; Shift and arrows move' },
   { keys: ['0'], does: 'the recipe’s own picture again, whole' },

@@ -4,7 +4,7 @@ import { lazy, Suspense } from 'react'
 import { letGo } from '@/components/bench/let-go'
 import { KeyCap } from '@/components/ui/key-cap'
 import type { LightStore } from './light-store'
-import { useLightFact, useZoomScale } from './use-light'
+import { useClose, useLightFact, useZoomScale } from './use-light'
 
 const LightPanel = lazy(() => import('./light-panel'))
 
@@ -20,6 +20,7 @@ export function LightSection({
 }) {
   const open = useLightFact(light, (now) => now.open)
   const touched = useLightFact(light, (now) => now.touched)
+  const close = useClose(light)
   const zoomed = useZoomScale(light) > 1
   return (
     <section aria-label="Light" className={`@container flex flex-col gap-1.5 ${className}`}>
@@ -37,6 +38,19 @@ export function LightSection({
           ) : null}
           Light
           {touched ? <span className="font-normal text-text">changed</span> : null}
+        </button>
+        <button
+          type="button"
+          aria-pressed={close}
+          onClick={letGo(() => light.setClose(!close))}
+          className="ml-auto flex min-h-9 items-center gap-2 text-note text-mute hover:text-text aria-pressed:text-text md:min-h-6"
+        >
+          {keys ? (
+            <span className="hidden md:inline">
+              <KeyCap>F</KeyCap>
+            </span>
+          ) : null}
+          Close field
         </button>
         {touched || zoomed ? (
           <button

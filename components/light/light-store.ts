@@ -33,6 +33,8 @@ export class LightStore {
   open = false
   /** Whether the settings stay for the next candidate. */
   keep = true
+  /** Whether the close field of view is shown, where the scale is known, or the whole cutout. */
+  close = false
   settings: LightSettings = PLAIN_LIGHT
   drawn: DrawnView | null = null
   status: LightStatus = 'waiting'
@@ -50,6 +52,7 @@ export class LightStore {
       if (!stored) return
       this.open = stored.open === true
       this.keep = stored.keep !== false
+      this.close = stored.close === true
       this.settings = settingsFrom(stored.settings)
       this.tell()
     } catch {
@@ -103,6 +106,12 @@ export class LightStore {
     this.changed()
   }
 
+  setClose(close: boolean): void {
+    this.close = close
+    this.zoom.reset()
+    this.changed()
+  }
+
   reset(): void {
     this.settings = PLAIN_LIGHT
     this.zoom.reset()
@@ -139,8 +148,9 @@ export class LightStore {
 
   private save(): void {
     try {
-      const { open, keep, settings } = this
-      localStorage.setItem(this.storageName, JSON.stringify({ open, keep, settings: keep ? settings : PLAIN_LIGHT }))
+      const { open, keep, close } = this
+      const settings = keep ? this.settings : PLAIN_LIGHT
+      localStorage.setItem(this.storageName, JSON.stringify({ open, keep, close, settings }))
     } catch {
       // No storage: the choice lasts as long as the page.
     }

@@ -1,17 +1,19 @@
 'use client'
 
-import { lazy, Suspense, useEffect, useRef, type ReactNode } from 'react'
+import { lazy, Suspense, useLayoutEffect, useRef, type ReactNode } from 'react'
 import { StampOverlay } from '@/components/ui/stamp-overlay'
+import { closeFactor } from '@/lib/science/imaging/close-field'
+import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
 import type { LightStore } from './light-store'
 import { usePanAndPinch } from './use-pan-and-pinch'
-import { useInUse, useZoomScale } from './use-light'
+import { useClose, useInUse, useZoomScale } from './use-light'
 
 const LightCanvas = lazy(() => import('./light-canvas'))
 
 /**
  * What fills the black square of a large picture: the pictures that the recipe made, Light's canvas over them while it is in
- * use, both as close as the zoom says, and the scale bar and compass, which stay in their corners.
+ * use, both cut to the field of view and as close as the zoom says, and the scale bar and compass, which stay in their corners.
  */
 export function LitBox({
   light,
@@ -19,6 +21,7 @@ export function LitBox({
   view,
   size,
   geometry,
+  closeFieldArcsec = CLOSE_FIELD_ARCSEC,
   scrolls,
   children,
 }: {
@@ -28,7 +31,9 @@ export function LitBox({
   view: string
   /** Pixels of its picture; null draws no scale bar and compass. */
   size: { width: number; height: number } | null
+  /** Of the view that is shown. */
   geometry: StampGeometry | null
+  closeFieldArcsec?: number
   /** The page scrolls, so one finger that moves up or down is the page's while the picture is whole. */
   scrolls: boolean
   children: ReactNode
@@ -36,11 +41,17 @@ export function LitBox({
   const box = useRef<HTMLDivElement>(null)
   const layer = useRef<HTMLDivElement>(null)
   const inUse = useInUse(light)
+  const close = useClose(light)
+  const scale = geometry?.pixelScaleArcsec ?? null
+  const closer = close && size ? closeFactor(Math.max(size.width, size.height), scale, closeFieldArcsec) : 1
   usePanAndPinch(box, light)
-  useEffect(() => {
+  useLayoutEffect(() => {
     const follow = () => {
       const { zoom } = light
-      if (layer.current) layer.current.style.transform = zoom.transform
+      // The field is cut first, then what is left is zoomed.
+      const zoomed = zoom.scale === 1 ? [] : [zoom.transform]
+      const steps = closer > 1 ? [...zoomed, `scale(${closer})`] : zoomed
+      if (layer.current) layer.current.style.transform = steps.join(' ') || 'none'
       if (box.current) {
         box.current.style.touchAction = scrolls && zoom.scale === 1 ? 'pan-y' : 'none'
         box.current.style.cursor = zoom.scale > 1 ? 'grab' : ''
@@ -48,7 +59,7 @@ export function LitBox({
     }
     follow()
     return light.zoom.subscribe(follow)
-  }, [light, scrolls])
+  }, [light, scrolls, closer])
   return (
     <div ref={box} className="absolute inset-0">
       <div ref={layer} className="absolute inset-0">
@@ -59,7 +70,18 @@ export function LitBox({
           </Suspense>
         ) : null}
       </div>
-      {size && geometry ? <ZoomedOverlay light={light} size={size} geometry={geometry} /> : null}
+      {size && geometry ? (
+        <ZoomedOverlay
+          light={light}
+          size={{ width: size.width / closer, height: size.height / closer }}
+          geometry={geometry}
+        />
+      ) : null}
+      {close && size ? (
+        <p className="figures pointer-events-none absolute left-2 top-1.5 text-note text-white [text-shadow:0_0_2px_#000]">
+          {closer > 1 ? `${closeFieldArcsec}″ field` : scale === null ? 'whole: scale unknown' : 'whole'}
+        </p>
+      ) : null}
     </div>
   )
 }

@@ -26,6 +26,8 @@ export function useLightFact<T extends string | number | boolean>(
 
 export const useInUse = (light: LightStore): boolean => useSyncExternalStore(light.subscribe, () => light.inUse, never)
 
+export const useClose = (light: LightStore): boolean => useSyncExternalStore(light.subscribe, () => light.close, never)
+
 /** Rounded, so that a pinch does not render each of its steps. */
 export const useZoomScale = (light: LightStore): number =>
   useSyncExternalStore(

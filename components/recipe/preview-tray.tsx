@@ -1,14 +1,18 @@
 import { StampFigure } from '@/components/ui/stamp-figure'
+import type { Sample } from './sample-chooser'
 import type { SamplePreview } from '@/lib/work/stamps/preview-recipe'
 
 /** The samples on the black tray: the chosen view large, every other as a slide below it. */
 export function PreviewTray({
+  wanted,
   samples,
   view,
   fieldArcsec,
   pending,
   onChoose,
 }: {
+  wanted: Sample[]
+  /** As far as they are drawn. */
   samples: SamplePreview[]
   view: string
   /** null: the whole cutout. */
@@ -21,11 +25,15 @@ export function PreviewTray({
       aria-busy={pending}
       className="night grid grid-cols-1 gap-3 rounded-tray bg-tray p-3 text-text min-[440px]:grid-cols-2 xl:grid-cols-3"
     >
-      {samples.map((sample) => {
+      {wanted.map(({ id, name }) => {
+        const sample = samples.find((one) => one.id === id) ?? { id, name, views: [], fault: null }
+        const drawn = sample.views.length > 0 || sample.fault !== null
         const shown = sample.views.find(({ key }) => key === view) ?? null
         return (
           <figure key={sample.id} className="flex min-w-0 flex-col gap-1.5">
             <StampFigure
+              // Until it is drawn, the box in which it will be.
+              className={drawn ? '' : '[&>p]:hidden'}
               src={shown?.url ?? null}
               alt={`${shown?.label ?? ''} of ${sample.name}`}
               width={shown?.width ?? 1}
@@ -36,7 +44,7 @@ export function PreviewTray({
             <figcaption className="min-w-0 text-note text-tray-text">
               <span className="figures block truncate text-text">{sample.name}</span>
               {sample.fault ?? shown?.note ?? null}
-              {shown === null && sample.fault === null ? 'This view is not shown.' : null}
+              {drawn ? null : 'Drawing…'}
             </figcaption>
             <div className="grid grid-cols-8 gap-1">
               {sample.views.map(({ key, label, url, width, height }) => (

@@ -99,6 +99,7 @@ export function RecipeEditor({ slug, bands, versions, firstSamples, mostSamples 
             <>
               <SampleChooser slug={slug} samples={samples} most={mostSamples} onChange={setSamples} />
               <PreviewTray
+                wanted={samples}
                 samples={shown.samples}
                 view={view}
                 fieldArcsec={close ? (comparing ? old : draft).closeFieldArcsec : null}

@@ -37,6 +37,7 @@ export function splitCommand(event: Pressed): SplitCommand | null {
 export const SPLIT_KEYS: { keys: string[]; does: string }[] = [
   { keys: ['J', 'K'], does: 'next, previous' },
   { keys: ['1', '…', '9'], does: 'view' },
+  { keys: ['F'], does: 'close field' },
   { keys: ['L'], does: 'light' },
   { keys: ['X'], does: 'hold to blink' },
   { keys: ['+', '-', '0'], does: 'zoom, reset' },
