@@ -1,5 +1,6 @@
 /** What the bench says to the server. Every other file of the bench works without a network. */
 import type { GradeLetter } from '@/db/schema/grading'
+import type { PERSON_HEADER } from '@/lib/work/people/person-header'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
 
 export interface GradeBody {
@@ -21,19 +22,31 @@ export type SendOutcome =
   /** To be tried again; the sentence says why it has not worked. */
   | { outcome: 'trouble'; sentence: string }
 
-const root = (slug: string) => `/api/campaigns/${encodeURIComponent(slug)}`
-
-async function problemSentence(response: Response): Promise<string> {
-  const body = (await response.json().catch(() => null)) as { detail?: unknown } | null
-  return typeof body?.detail === 'string' ? body.detail : `The server answered ${response.status}.`
+/** Whose bench this is: the server takes nothing of it for anybody else who has signed in beside it. */
+export interface BenchOwner {
+  slug: string
+  personId: number
 }
 
-export async function sendGrade(slug: string, candidateId: number, body: GradeBody): Promise<SendOutcome> {
+/** Typed by the server's constant, so that the two cannot differ. */
+const HEADER: typeof PERSON_HEADER = 'ringside-person'
+
+const whose = ({ personId }: BenchOwner) => ({ [HEADER]: String(personId) })
+
+const root = (slug: string) => `/api/campaigns/${encodeURIComponent(slug)}`
+
+async function problemOf(response: Response): Promise<{ type: unknown; sentence: string }> {
+  const body = (await response.json().catch(() => null)) as { type?: unknown; detail?: unknown } | null
+  const sentence = typeof body?.detail === 'string' ? body.detail : `The server answered ${response.status}.`
+  return { type: body?.type, sentence }
+}
+
+export async function sendGrade(owner: BenchOwner, candidateId: number, body: GradeBody): Promise<SendOutcome> {
   let response: Response
   try {
-    response = await fetch(`${root(slug)}/candidates/${candidateId}/grade`, {
+    response = await fetch(`${root(owner.slug)}/candidates/${candidateId}/grade`, {
       method: 'PUT',
-      headers: { 'content-type': 'application/json' },
+      headers: { 'content-type': 'application/json', ...whose(owner) },
       body: JSON.stringify(body),
       // Finishes even when the page is closed meanwhile.
       keepalive: true,
@@ -51,20 +64,27 @@ export async function sendGrade(slug: string, candidateId: number, body: GradeBo
   if (response.status >= 500 || response.status === 429 || response.status === 408) {
     return { outcome: 'trouble', sentence: 'The server has trouble just now.' }
   }
-  return { outcome: 'refused', sentence: await problemSentence(response) }
+  const { type, sentence } = await problemOf(response)
+  if (type === 'urn:ringside:problem:other-person') {
+    return {
+      outcome: 'trouble',
+      sentence:
+        'Somebody else has signed in in this browser. Your grades are kept here: sign in again as yourself in another tab; this one goes on by itself.',
+    }
+  }
+  return { outcome: 'refused', sentence }
 }
 
 /** @throws Error when nothing usable comes back. */
-export async function askQueue(slug: string, count: number): Promise<LentQueue> {
-  const response = await fetch(`${root(slug)}/queue?count=${count}`, { cache: 'no-store' })
-  if (!response.ok) throw new Error(await problemSentence(response))
+export async function askQueue(owner: BenchOwner, count: number): Promise<LentQueue> {
+  const response = await fetch(`${root(owner.slug)}/queue?count=${count}`, { cache: 'no-store', headers: whose(owner) })
+  if (!response.ok) throw new Error((await problemOf(response)).sentence)
   return (await response.json()) as LentQueue
 }
 
 /** Best effort: a lease that is not given back runs out by itself. */
-export function giveBackQueue(slug: string, candidateIds: number[]): void {
+export function giveBackQueue(owner: BenchOwner, candidateIds: number[]): void {
   if (candidateIds.length === 0) return
-  void fetch(`${root(slug)}/queue?candidates=${candidateIds.join(',')}`, { method: 'DELETE', keepalive: true }).catch(
-    () => {},
-  )
+  const url = `${root(owner.slug)}/queue?candidates=${candidateIds.join(',')}`
+  void fetch(url, { method: 'DELETE', keepalive: true, headers: whose(owner) }).catch(() => {})
 }

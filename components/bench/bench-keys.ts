@@ -68,11 +68,18 @@ export const SLIDER_KEYS: readonly string[] = [
   'PageDown',
 ]
 
+/**
+ * Marks a button to which the focus came back by itself, from a field that closed: Space means what it means on the page, for
+ * the person did not go to the button. Enter still presses it.
+ */
+export const RETURNED_FOCUS = 'data-returned-focus'
+
 export function focusKind(target: EventTarget | null): FocusKind {
   if (!(target instanceof Element)) return 'page'
   if (target.closest('input[type="range"]')) return 'slider'
   if (target.closest('input[type="checkbox"]')) return 'control'
   if (target.closest('input, textarea, select, [contenteditable]:not([contenteditable="false"])')) return 'text'
+  if (target.hasAttribute(RETURNED_FOCUS)) return 'page'
   return target.closest('button, a[href], summary, [role="button"]') ? 'control' : 'page'
 }
 

@@ -73,6 +73,8 @@ export type BenchAction =
       resumed: boolean
     }
   | { type: 'refused'; candidateId: number }
+  /** The server keeps the answer that it had. */
+  | { type: 'correction refused'; candidateId: number; before: Answer }
   /** Grades of an earlier visit that are still on their way, found when the page opened. */
   | { type: 'found waiting'; candidateIds: number[]; firsts: number }
 
@@ -151,6 +153,14 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
       return refilled(session, action)
     case 'refused':
       return refused(session, action.candidateId)
+    case 'correction refused':
+      return {
+        ...session,
+        given: session.given.map((look) =>
+          look.candidate.id === action.candidateId ? { ...look, answer: action.before } : look,
+        ),
+        last: session.last?.candidateId === action.candidateId ? null : session.last,
+      }
     case 'found waiting':
       return foundWaiting(session, action)
   }

@@ -8,6 +8,7 @@ interface Sent {
   url: string
   method: string
   body: Record<string, unknown> | null
+  person: string | null
 }
 
 let sent: Sent[]
@@ -21,7 +22,8 @@ beforeEach(() => {
   localStorage.clear()
   vi.stubGlobal('fetch', async (url: string, init: RequestInit = {}) => {
     const method = init.method ?? 'GET'
-    sent.push({ url, method, body: init.body ? (JSON.parse(String(init.body)) as Record<string, unknown>) : null })
+    const body = init.body ? (JSON.parse(String(init.body)) as Record<string, unknown>) : null
+    sent.push({ url, method, body, person: new Headers(init.headers).get('ringside-person') })
     if (method === 'PUT') return answerGrade()
     return Response.json(method === 'GET' ? { ...queue, until: '' } : {})
   })
@@ -105,6 +107,25 @@ describe('the bench', () => {
     await user.keyboard('c')
     await waitFor(() => expect(grades()).toHaveLength(1))
     expect(grades()[0].body?.remark).toBe('a blue curve, can be N\nx')
+  })
+
+  it('gives the focus back when the remark closes, where Space still blinks and Enter opens the remark again', async () => {
+    const { user } = await open()
+    await user.keyboard('m')
+    await user.keyboard('thin{Escape}')
+    const button = screen.getByRole('button', { name: /thin$/ })
+    expect(button).toHaveFocus()
+    await user.keyboard(' ')
+    expect(screen.queryByRole('textbox')).not.toBeInTheDocument()
+    await user.keyboard('{Enter}')
+    expect(screen.getByRole('textbox')).toHaveFocus()
+  })
+
+  it('leaves Space to the remark button when the person went to it', async () => {
+    const { user } = await open()
+    screen.getByRole('button', { name: /Add a remark/ }).focus()
+    await user.keyboard(' ')
+    expect(screen.getByRole('textbox')).toHaveFocus()
   })
 
   it('picks tags by key, and a grade closes the chooser', async () => {
@@ -202,6 +223,42 @@ describe('the bench', () => {
     await user.click(within(alert).getByRole('button', { name: 'I have read this' }))
     expect(screen.queryByRole('alert')).not.toBeInTheDocument()
     expect(grades()).toHaveLength(1)
+  })
+
+  it('shows in words why a correction was refused, goes on, and looks back at what stands', async () => {
+    const detail = "You have seen the others' grades of this candidate since, so yours stands as you gave it."
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    await look()
+    answerGrade = () => Response.json({ type: 'urn:ringside:problem:judgement-seen', detail }, { status: 409 })
+    await user.keyboard('z')
+    await look()
+    await user.keyboard('n')
+    expect(await screen.findByRole('alert')).toHaveTextContent(`SWS-1, your N: ${detail}`)
+    expect(name()).toBe('SWS-2')
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '1')
+    await user.keyboard('z')
+    expect(screen.getByRole('button', { name: /^A: Sure/ })).toHaveAttribute('aria-pressed', 'true')
+  })
+
+  it('says whose it is with everything it sends', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    unmount()
+    await waitFor(() => expect(sent.at(-1)?.method).toBe('DELETE'))
+    expect(new Set(sent.map(({ method }) => method))).toEqual(new Set(['GET', 'PUT', 'DELETE']))
+    expect(new Set(sent.map(({ person }) => person))).toEqual(new Set(['7']))
+  })
+
+  it('keeps a grade, with a sentence, while somebody else is signed in, and sends it when the person is back', async () => {
+    answerGrade = () => Response.json({ type: 'urn:ringside:problem:other-person', detail: '' }, { status: 409 })
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. Somebody else has signed in in this browser/))
+    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    answerGrade = () => Response.json({})
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
   })
 })
 

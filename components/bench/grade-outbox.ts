@@ -4,12 +4,15 @@
  * server refuses is put aside with its sentence and never sent again.
  */
 import type { GradeBody, SendOutcome } from './bench-api'
+import type { Answer } from './bench-session'
 
 export interface WaitingGrade {
   candidateId: number
   name: string
   /** A first grade, not a correction. */
   first: boolean
+  /** Of a correction: the answer that the server has, and that stands where it refuses this one. */
+  before?: Answer
   /** Order of giving, milliseconds since 1970. */
   at: number
   body: GradeBody

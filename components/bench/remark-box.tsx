@@ -1,4 +1,6 @@
+import { useEffect, useRef } from 'react'
 import { KeyCap } from '@/components/ui/key-cap'
+import { RETURNED_FOCUS } from './bench-keys'
 import { letGo } from './let-go'
 
 export const REMARK_ID = 'bench-remark'
@@ -18,10 +20,20 @@ export function RemarkBox({
   onClose: () => void
   onWrite: (remark: string) => void
 }) {
+  const button = useRef<HTMLButtonElement>(null)
+  const returning = useRef(false)
+  useEffect(() => {
+    if (open || !returning.current) return
+    returning.current = false
+    button.current?.setAttribute(RETURNED_FOCUS, '')
+    button.current?.focus()
+  }, [open])
   if (!open) {
     return (
       <button
+        ref={button}
         type="button"
+        onBlur={(event) => event.currentTarget.removeAttribute(RETURNED_FOCUS)}
         onClick={letGo(onOpen)}
         className="flex min-h-11 items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
       >
@@ -55,6 +67,7 @@ export function RemarkBox({
           if (event.key === 'Escape' || (event.key === 'Enter' && !event.shiftKey)) {
             event.preventDefault()
             event.stopPropagation()
+            returning.current = true
             onClose()
           }
         }}

@@ -27,6 +27,8 @@ export function useBenchKeys({
     if (!on) return
     const down = (event: KeyboardEvent) => pressed(event)
     const up = (event: KeyboardEvent) => {
+      // Some browsers press a focused button when Space comes up, whatever became of the key going down.
+      if (event.key === ' ' && focusKind(event.target) === 'page') event.preventDefault()
       if (event.key === ' ' || event.key.toLowerCase() === 'x') released()
     }
     const lost = () => released()

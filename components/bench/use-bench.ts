@@ -41,8 +41,9 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const look = currentLook(session)
   const candidateId = look?.candidate.id ?? null
   const { outbox, snapshot, latest } = useOutbox(slug, personId, {
-    refused: ({ first: wasFirst, candidateId: id }) => {
+    refused: ({ first: wasFirst, before, candidateId: id }) => {
       if (wasFirst) dispatch({ type: 'refused', candidateId: id })
+      else if (before) dispatch({ type: 'correction refused', candidateId: id, before })
     },
     found: (waiting) =>
       dispatch({
@@ -51,7 +52,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
         firsts: firstsIn(waiting),
       }),
   })
-  useSupply({ slug, session, dispatch, outbox: latest })
+  useSupply({ slug, personId, session, dispatch, outbox: latest })
   usePreloaded(session.upcoming)
   const seconds = useVisibleSeconds(candidateId)
 
@@ -64,12 +65,14 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     return () => clearTimeout(timer)
   }, [hint])
 
-  function send({ candidate, answer, view, seconds: spent }: Look, isFirst: boolean): void {
+  function send({ candidate, answer, view, seconds: spent }: Look, before: Answer | null): void {
     const { grade, tags, reason } = answer
+    const waiting = latest().waiting.find((one) => one.candidateId === candidate.id && one.before)
     outbox?.add({
       candidateId: candidate.id,
       name: candidate.name,
-      first: isFirst,
+      first: before === null,
+      before: waiting?.before ?? before ?? undefined,
       at: Date.now(),
       body: {
         id: makeUid(),
@@ -98,7 +101,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     const { tags, remark } = currentDraft(session)
     const given: Answer = { tags, remark, grade: letter, reason }
     const spent = { view: session.view, seconds: seconds() }
-    if (!before || !sameAnswer(before, given)) send({ candidate, answer: given, ...spent }, !before)
+    if (!before || !sameAnswer(before, given)) send({ candidate, answer: given, ...spent }, before)
     dispatch({ type: 'graded', answer: given, ...spent })
     settle()
   }
@@ -114,7 +117,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     const unclear = explainable(session)
     setChooser(null)
     if (!unclear || unclear.answer.reason === reason) return
-    send({ ...unclear, answer: { ...unclear.answer, reason } }, false)
+    send({ ...unclear, answer: { ...unclear.answer, reason } }, unclear.answer)
     dispatch({ type: 'explained', reason })
   }
 

@@ -33,7 +33,7 @@ export function useOutbox(
     const box = new GradeOutbox({
       storage: browserStorage(),
       scope: `${slug}:${personId}`,
-      send: (candidateId, body) => sendGrade(slug, candidateId, body),
+      send: (candidateId, body) => sendGrade({ slug, personId }, candidateId, body),
       onRefused: (grade) => refused(grade),
     })
     // The storage of the browser is only there after the first paint.

@@ -21,6 +21,7 @@ const SIBLING_MS = 1000
 
 interface Around {
   slug: string
+  personId: number
   session: BenchSession
   dispatch: Dispatch<BenchAction>
   outbox: () => OutboxSnapshot
@@ -30,7 +31,7 @@ interface Around {
  * Keeps candidates coming: refills, renews the leases while somebody works here, looks again when everything left is with
  * others, and gives back what was not graded on leaving.
  */
-export function useSupply({ slug, session, dispatch, outbox }: Around): void {
+export function useSupply({ slug, personId, session, dispatch, outbox }: Around): void {
   const { upcoming, counts, supply } = session
   const asking = useRef(false)
   const lastTouch = useRef(0)
@@ -42,7 +43,7 @@ export function useSupply({ slug, session, dispatch, outbox }: Around): void {
     asking.current = true
     dispatch({ type: 'asked' })
     try {
-      const supplied = await askQueue(slug, wanted)
+      const supplied = await askQueue({ slug, personId }, wanted)
       const { waiting } = outbox()
       dispatch({
         type: 'supplied',
@@ -87,7 +88,7 @@ export function useSupply({ slug, session, dispatch, outbox }: Around): void {
       lastTouch.current = now
     }
     const leave = (ids: number[]) => {
-      giveBackQueue(slug, ids)
+      giveBackQueue({ slug, personId }, ids)
       siblings?.postMessage('left')
     }
     const hidden = () => leave(heldIds())
@@ -118,7 +119,7 @@ export function useSupply({ slug, session, dispatch, outbox }: Around): void {
         siblings?.close()
       })
     }
-  }, [slug])
+  }, [slug, personId])
 }
 
 const TOUCHES = ['keydown', 'pointerdown', 'pointermove'] as const

@@ -4,7 +4,8 @@ import type { Kysely } from 'kysely'
 import { type z } from 'zod'
 import type { DB } from '@/db/schema'
 import { database } from '@/lib/platform/database'
-import { Problem, forbidden } from '@/lib/platform/problems/problem'
+import { Problem, conflict, forbidden } from '@/lib/platform/problems/problem'
+import { PERSON_HEADER } from '@/lib/work/people/person-header'
 import { getViewer } from '@/lib/work/people/session'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { problemResponse } from './problem-response'
@@ -30,13 +31,34 @@ interface Shape<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType> {
 
 type Handler = (request: NextRequest, context: { params: Promise<unknown> }) => Promise<Response>
 
-/** A browser says where a request comes from; a script says nothing, and has no cookie that another site could borrow. */
+/**
+ * A browser says where a change comes from: in Sec-Fetch-Site, or on plain http, where it leaves that out, in Origin. A script
+ * says nothing, and has no cookie that another site could borrow.
+ */
 function assertSameOrigin(request: NextRequest): void {
   if (request.method === 'GET' || request.method === 'HEAD') return
   const site = request.headers.get('sec-fetch-site')
-  if (site && site !== 'same-origin' && site !== 'none') {
+  const origin = request.headers.get('origin')
+  const otherSite = site !== null && site !== 'same-origin' && site !== 'none'
+  const otherOrigin = origin !== null && hostOf(origin) !== request.headers.get('host')
+  if (otherSite || otherOrigin) {
     throw forbidden('Changes are taken from this site only, and the request came from another.')
   }
+}
+
+/** Host and port of an origin; null for `null`, which sandboxed and local pages send. */
+function hostOf(origin: string): string | null {
+  return URL.canParse(origin) ? new URL(origin).host : null
+}
+
+/** A page that one person opened does nothing in the name of another who has signed in since. */
+function assertSamePerson(request: NextRequest, viewer: Viewer | null): void {
+  const person = request.headers.get(PERSON_HEADER)
+  if (person === null || viewer === null || person === String(viewer.id)) return
+  throw conflict(
+    'other-person',
+    'The page that sent this was opened by somebody else than who is signed in now, so nothing was changed. Sign in as that person, or load the page again.',
+  )
 }
 
 async function parseJson(request: NextRequest): Promise<unknown> {
@@ -57,6 +79,7 @@ export function route<
     try {
       assertSameOrigin(request)
       const [rawParams, db, viewer] = await Promise.all([context.params, database(), getViewer()])
+      assertSamePerson(request, viewer)
       const rawQuery = Object.fromEntries(request.nextUrl.searchParams)
       const params = (shape.params ? shape.params.parse(rawParams) : rawParams) as z.output<P>
       const query = (shape.query ? shape.query.parse(rawQuery) : rawQuery) as z.output<Q>

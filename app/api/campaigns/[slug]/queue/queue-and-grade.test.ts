@@ -97,3 +97,27 @@ describe('PUT grade', () => {
     expect((await grade(grader, ids[0], '{"grade":"A"}', { 'sec-fetch-site': 'cross-site' })).status).toBe(403)
   })
 })
+
+describe('a page of somebody else', () => {
+  const [asGrader, asOther] = [() => String(scenario.graders[0].id), () => String(scenario.graders[1].id)]
+  const call = (handler: typeof getQueue, method: string, person: string) => {
+    session.viewer = scenario.graders[0]
+    const params = Promise.resolve({ slug: scenario.campaign.slug })
+    return handler(at('', { method, headers: { 'ringside-person': person } }), { params })
+  }
+
+  it('neither grades, nor borrows, nor gives back in the name of who is signed in now', async () => {
+    await call(getQueue, 'GET', asGrader())
+    const refused = await grade(scenario.graders[0], ids[0], '{"grade":"A"}', { 'ringside-person': asOther() })
+    expect([refused.status, (await refused.json()).type]).toEqual([409, 'urn:ringside:problem:other-person'])
+    expect((await call(deleteQueue, 'DELETE', asOther())).status).toBe(409)
+    expect((await call(getQueue, 'GET', asOther())).status).toBe(409)
+    expect(await scenario.db.selectFrom('grade').selectAll().execute()).toEqual([])
+    expect(await scenario.db.selectFrom('lease').selectAll().execute()).toHaveLength(2)
+  })
+
+  it('that is their own grades', async () => {
+    const taken = await grade(scenario.graders[0], ids[0], '{"grade":"A"}', { 'ringside-person': asGrader() })
+    expect(taken.status).toBe(200)
+  })
+})
