@@ -38,6 +38,8 @@ function judgement(more: Partial<Judgement> = {}): Judgement {
     stateReason: 'Split: grades A, A, N; the spread 1.41 is above 0.90.',
     calibration: false,
     score: null,
+    lensRedshift: null,
+    sourceRedshift: null,
     votes,
     grades: [
       {
@@ -89,8 +91,6 @@ function evidence(id: number, name: string, more: Partial<Judgement> = {}): Cand
     raDeg: 6.873523,
     decDeg: -1.149741,
     pixelScaleArcsec: 0.2,
-    lensRedshift: null,
-    sourceRedshift: null,
     files: [],
     pictures: {
       views: [view('colour', 'Colour'), view('deep', 'Deep'), view('band:g', 'g')],
@@ -204,7 +204,10 @@ describe('the splits page', () => {
   it('rules by keyboard alone: a letter, the reason, Ctrl and Enter, and names the case that comes next', async () => {
     const { user, ruleAction } = show()
     await user.keyboard('b')
+    expect(reason(), 'an R that follows must not be written into it').not.toHaveFocus()
+    await user.keyboard('r')
     expect(reason()).toHaveFocus()
+    expect(reason()).toHaveValue('')
     await user.keyboard('A counter-image, j k 2 n.')
     expect(push).not.toHaveBeenCalled()
     expect(big()).toHaveAccessibleName('Colour of SWS0002')
@@ -221,7 +224,7 @@ describe('the splits page', () => {
   it('shows what the server refuses beside the field and keeps what was typed and chosen', async () => {
     const errors = { reason: 'Give a reason: it is kept with the ruling.' }
     const { user } = show({ ruleAction: async () => ({ message: 'Nothing was saved yet.', errors }) })
-    await user.keyboard('n')
+    await user.keyboard('nr')
     await user.keyboard('   ')
     await user.click(screen.getByRole('button', { name: 'Set aside' }))
     expect(await screen.findByText(errors.reason)).toBeVisible()
@@ -258,7 +261,7 @@ describe('the splits page', () => {
     const more: Partial<Judgement> = { state: 'confirmed', rulings: [ruling], standingRuling: ruling }
     const { user, ruleAction } = show({ evidence: evidence(2, 'SWS0002', more) })
     expect(screen.getByText(/Reverse this ruling/)).toBeVisible()
-    await user.keyboard('v')
+    await user.keyboard('vr')
     await user.keyboard('It was rash.{Control>}{Enter}{/Control}')
     expect(Object.fromEntries(ruleAction.mock.calls[0][1])).toMatchObject({ choice: 'by-verdict', lastRuling: '5' })
   })
@@ -267,7 +270,7 @@ describe('the splits page', () => {
     const { user } = show()
     expect(screen.queryByRole('radio', { name: 'Let the verdict decide' })).toBeNull()
     await user.keyboard('v')
-    expect(reason()).not.toHaveFocus()
+    expect(screen.getAllByRole('radio').filter((radio) => (radio as HTMLInputElement).checked)).toEqual([])
   })
 
   it('says what was ruled a moment ago and leads back to reverse it', () => {

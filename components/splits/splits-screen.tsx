@@ -71,8 +71,8 @@ export function SplitsScreen(props: SplitsScreenProps) {
   }
   const choose = (choice: RulingChoice) => {
     if (choice === 'by-verdict' && !judgement?.standingRuling) return
+    // The focus stays: whoever goes on with R, as the line of keys says, would else write that letter into the reason.
     setNow({ ...now, choice })
-    reasonRef.current?.focus()
   }
   const light = useLight(props.personId, slug)
   const [blinking, setBlinking] = useState(false)

@@ -17,7 +17,7 @@ export async function startServer(): Promise<void> {
   if (shared.ringsideStarted) return
   shared.ringsideStarted = true
   // next-auth reads its address from the environment only.
-  process.env.NEXTAUTH_URL ??= config().siteUrl
+  if (!process.env.NEXTAUTH_URL?.trim()) process.env.NEXTAUTH_URL = config().siteUrl
   const db = await database()
   const code = await makeSetupCode(db)
   // Plain, not through the log: a person looks for it, at every level of the log.

@@ -1,9 +1,11 @@
 import 'server-only'
 import { getServerSession } from 'next-auth'
+import { headers } from 'next/headers'
 import { redirect } from 'next/navigation'
 import { cache } from 'react'
 import { findPerson, hasAdministrator } from '@/db/queries/people'
 import { database } from '@/lib/platform/database'
+import { ASKED_PATH_HEADER } from './asked-path'
 import { authOptions } from './auth-options'
 import type { Viewer } from './viewer'
 
@@ -16,10 +18,14 @@ export const getViewer = cache(async (): Promise<Viewer | null> => {
   return { id: person.id, name: person.name, email: person.email, isAdmin: person.is_admin === 1 }
 })
 
-/** For pages: sends a signed-out visitor to the sign-in page and back afterwards; on a site without administrator, to make one. */
+/**
+ * For pages: sends a signed-out visitor to the sign-in page and back afterwards, to the address asked for (`returnTo` where none
+ * is known); on a site without administrator, to make one.
+ */
 export async function requireViewer(returnTo: string): Promise<Viewer> {
   const viewer = await getViewer()
   if (!viewer && !(await hasAdministrator(await database()))) redirect('/welcome')
-  if (!viewer) redirect(`/signin?next=${encodeURIComponent(returnTo)}`)
-  return viewer
+  if (viewer) return viewer
+  const asked = (await headers()).get(ASKED_PATH_HEADER) ?? returnTo
+  redirect(`/signin?next=${encodeURIComponent(asked)}`)
 }
