@@ -1,6 +1,7 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Batch, FileRow } from '../schema/intake'
+import { isToBeRead } from './in-force'
 
 /** The oldest archive that waits to be unpacked, of no paused batch. */
 export async function findWaitingArchive(db: Kysely<DB>, campaignId: number): Promise<FileRow | null> {
@@ -58,16 +59,12 @@ export async function listUnfinishedBatches(db: Kysely<DB>, campaignId: number):
           .select((f) => ['batch_id', f.fn.countAll<number>().as('waiting')])
           .where('campaign_id', '=', campaignId)
           .where('fate', '=', 'stored')
+          .where(isToBeRead)
           .groupBy('batch_id')
           .as('stored'),
       (join) => join.onRef('stored.batch_id', '=', 'batch.id'),
     )
-    .select((e) => [
-      'batch.id',
-      'batch.name',
-      'batch.state',
-      e.fn.coalesce('stored.waiting', e.lit(0)).as('waiting'),
-    ])
+    .select((e) => ['batch.id', 'batch.name', 'batch.state', e.fn.coalesce('stored.waiting', e.lit(0)).as('waiting')])
     .where('batch.campaign_id', '=', campaignId)
     .where((e) => e.or([e('batch.state', '=', 'paused'), e('stored.waiting', '>', 0)]))
     .orderBy('batch.id', 'desc')

@@ -1,6 +1,7 @@
 import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { Batch, FileFate, FileRow } from '../schema/intake'
+import { inForce, isToBeRead } from './in-force'
 
 export async function findNewestBatch(
   db: Kysely<DB>,
@@ -168,6 +169,7 @@ export async function releaseDuplicates(db: Kysely<DB>, fileIds: readonly number
     .set({ fate: 'stored', reason: null, duplicate_of: null, updated_at: now })
     .where('duplicate_of', 'in', fileIds)
     .where('fate', '=', 'duplicate')
+    .where(inForce(['refused', 'duplicate'], ['stored', 'read', 'imaged']))
     .execute()
 }
 
@@ -209,18 +211,7 @@ export async function listWaitingFiles(
     .where('kind', '=', kind)
     .where('id', '>', afterId)
     .where(inOpenBatch)
-    .where((e) =>
-      e.or([
-        e('replaced_by', 'is', null),
-        e.exists(
-          e
-            .selectFrom('file as newer')
-            .select('newer.id')
-            .whereRef('newer.id', '=', 'file.replaced_by')
-            .where('newer.fate', '=', 'refused'),
-        ),
-      ]),
-    )
+    .where(isToBeRead)
     .orderBy('id')
     .limit(limit)
     .execute()
@@ -234,6 +225,7 @@ export async function countWaitingFiles(db: Kysely<DB>, campaignId: number): Pro
     .where('fate', '=', 'stored')
     .where('kind', '!=', 'archive')
     .where(inOpenBatch)
+    .where(isToBeRead)
     .executeTakeFirstOrThrow()
   return row.n
 }
@@ -250,6 +242,9 @@ export async function newestDelivery(db: Kysely<DB>, campaignId: number): Promis
   return row?.created_at ?? null
 }
 
+/** Why a file was not read that another of its name has replaced at once. */
+const NOT_NEEDED = 'A newer file of this name came before this one was read.'
+
 export interface FileFateUpdate {
   fate: FileFate
   fault: string | null
@@ -257,6 +252,7 @@ export interface FileFateUpdate {
   duplicateOf: number | null
 }
 
+/** Files of the same names that were replaced before they were read need not be read any more: they are settled with these. */
 export async function setFileFates(
   db: Kysely<DB>,
   ids: readonly number[],
@@ -268,6 +264,29 @@ export async function setFileFates(
     .updateTable('file')
     .set({ fate: to.fate, fault: to.fault, reason: to.reason, duplicate_of: to.duplicateOf, updated_at: now })
     .where('id', 'in', ids)
+    .execute()
+  if (to.fate !== 'stored' && to.fate !== 'refused') await settleReplaced(db, ids, now)
+}
+
+async function settleReplaced(db: Kysely<DB>, ids: readonly number[], now: string): Promise<void> {
+  await db
+    .updateTable('file')
+    .set({ fate: 'duplicate', fault: null, reason: NOT_NEEDED, duplicate_of: null, updated_at: now })
+    .where('fate', '=', 'stored')
+    .where((e) =>
+      e.or([
+        e('replaced_by', 'in', ids),
+        // Replaced by the same newer file, which was refused, so that one of `ids` was read in its stead.
+        e.exists(
+          e
+            .selectFrom('file as later')
+            .select('later.id')
+            .where('later.id', 'in', ids)
+            .whereRef('later.replaced_by', '=', 'file.replaced_by')
+            .whereRef('later.id', '>', 'file.id'),
+        ),
+      ]),
+    )
     .execute()
 }
 
@@ -332,11 +351,13 @@ export async function listFiles(db: Kysely<DB>, campaignId: number, filter: File
   return query.orderBy('file.id').limit(filter.limit).execute()
 }
 
+/** How many files have which fate; a file that waits to be read while a newer one of its name is here is not counted. */
 export async function countFates(db: Kysely<DB>, campaignId: number): Promise<Record<FileFate, number>> {
   const rows = await db
     .selectFrom('file')
     .select((e) => ['fate', e.fn.countAll<number>().as('n')])
     .where('campaign_id', '=', campaignId)
+    .where((e) => e.or([e('fate', '!=', 'stored'), isToBeRead]))
     .groupBy('fate')
     .execute()
   const counts: Record<FileFate, number> = { stored: 0, read: 0, imaged: 0, duplicate: 0, refused: 0 }

@@ -1,24 +1,17 @@
 import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { ManifestRow } from '../schema/intake'
+import { inForce } from './in-force'
+
+const NO_FILE = -1
 
 /**
  * A manifest stays in force until a newer one of its name is read: not while that one waits, nor when it is refused. Of several
  * that were replaced, the one that was in use last. `reading` is the manifest that is taken now: it counts as read.
  */
-const inForce = (reading: number | null) => sql<SqlBool>`(
-  file.replaced_by is null
-  or (
-    file.replaced_by is not ${reading}
-    and file.fate = 'read'
-    and (select newer.fate from file newer where newer.id = file.replaced_by) in ('stored', 'refused', 'duplicate')
-    and not exists (
-      select 1 from file later
-      where later.replaced_by = file.replaced_by and later.id != file.id and later.fate = 'read'
-        and (later.updated_at, later.id) > (file.updated_at, file.id)
-    )
-  )
-)`
+const manifestInForce = (reading: number | null) =>
+  sql<SqlBool>`(${inForce(['stored', 'refused', 'duplicate'], ['read'])} and file.replaced_by is not ${reading ?? NO_FILE}
+    and (file.replaced_by is null or file.fate = 'read'))`
 
 /** The manifest lines in force for files with these base names. */
 export async function listManifestRowsOfBases(
@@ -47,7 +40,7 @@ function manifestRows(db: Kysely<DB>, campaignId: number, reading: number | null
     .innerJoin('file', 'file.id', 'manifest_row.file_id')
     .selectAll('manifest_row')
     .where('manifest_row.campaign_id', '=', campaignId)
-    .where(inForce(reading))
+    .where(manifestInForce(reading))
 }
 
 export async function hasManifestRows(db: Kysely<DB>, campaignId: number): Promise<boolean> {

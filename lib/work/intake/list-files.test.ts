@@ -73,7 +73,7 @@ describe('the list of files', () => {
     await intake.read()
     const { files } = await list()
     expect(files.map(({ replaced, fate }) => [replaced, fate])).toEqual([
-      [true, 'stored'],
+      [true, 'duplicate'],
       [false, 'imaged'],
     ])
     expect(files[0].reason).toContain('newer file')

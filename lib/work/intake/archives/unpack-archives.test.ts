@@ -93,7 +93,7 @@ describe('an archive', () => {
     await intake.read()
     const g = await intake.db.selectFrom('file').selectAll().where('name', 'like', '%_g.fits').orderBy('id').execute()
     expect(g.map(({ replaced_by, fate }) => [replaced_by, fate])).toEqual([
-      [g[1].id, 'stored'],
+      [g[1].id, 'duplicate'],
       [null, 'imaged'],
     ])
     expect((await intake.fates())['n.zip']).toBe('read')
