@@ -1,4 +1,4 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign } from '../schema/campaigns'
 import { among, inCampaign } from './by-ids'
@@ -184,12 +184,40 @@ export async function clearImaged(db: Kysely<DB>, candidateIds: readonly number[
   await db.updateTable('candidate').set({ imaged_at: null }).where('id', 'in', candidateIds).execute()
 }
 
-/** Files whose planes these candidates have and that are read but not imaged. */
-export async function setFilesImaged(db: Kysely<DB>, candidateIds: readonly number[], now: string): Promise<void> {
+/** Takes away stamps of later recipes than this: they were made of planes that these candidates no longer have. */
+export async function deleteLaterStamps(
+  db: Kysely<DB>,
+  candidateIds: readonly number[],
+  recipeId: number,
+): Promise<boolean> {
+  if (candidateIds.length === 0) return false
+  const gone = await db
+    .deleteFrom('stamp')
+    .where('candidate_id', 'in', candidateIds)
+    .where('recipe_id', '>', recipeId)
+    .executeTakeFirst()
+  return gone.numDeletedRows > 0
+}
+
+/**
+ * Files whose planes these candidates have and that are read but not imaged. What was noted of a file stays; the part of it
+ * from `notImaged` on, which says why it was not imaged, goes.
+ */
+export async function setFilesImaged(
+  db: Kysely<DB>,
+  candidateIds: readonly number[],
+  notImaged: string,
+  now: string,
+): Promise<void> {
   if (candidateIds.length === 0) return
   await db
     .updateTable('file')
-    .set({ fate: 'imaged', reason: null, updated_at: now })
+    .set({
+      fate: 'imaged',
+      reason: sql<string | null>`case when instr(reason, ${notImaged}) = 0 then reason
+        else nullif(trim(substr(reason, 1, instr(reason, ${notImaged}) - 1)), '') end`,
+      updated_at: now,
+    })
     .where('fate', '=', 'read')
     .where('kind', '=', 'fits')
     .where('id', 'in', (query) =>

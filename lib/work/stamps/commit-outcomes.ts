@@ -1,14 +1,21 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { deletePlanesOfReplaced, upsertCandidates, upsertPlanes, type CandidateFacts } from '@/db/queries/cutouts'
+import {
+  deletePlanesOfReplaced,
+  listHeldPlanes,
+  upsertCandidates,
+  upsertPlanes,
+  type CandidateFacts,
+} from '@/db/queries/cutouts'
 import { listStillWaiting, releaseDuplicates, setFileFates, type FileFateUpdate } from '@/db/queries/intake'
-import { clearImaged, replaceStamps, setFilesImaged } from '@/db/queries/stamps'
+import { clearImaged, deleteLaterStamps, replaceStamps, setFilesImaged } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { isoTime } from '@/lib/platform/clock'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
-import type { CandidateOutcome } from './worker-tasks'
+import { groupBy } from '@/lib/work/intake/group-by'
+import { NOT_IMAGED, type CandidateOutcome, type PlannedPlane } from './worker-tasks'
 
 export interface Campaigned {
   campaignId: number
@@ -17,7 +24,8 @@ export interface Campaigned {
 
 /**
  * Writes what came of several candidates in one transaction: candidates, planes, stamps and the fate of each file. A candidate
- * whose files another process has settled meanwhile is left out, so that doing the same work twice changes nothing.
+ * whose files another process has settled meanwhile is left out, so that doing the same work twice changes nothing; so is one
+ * that has other planes now than it was to be drawn with, whose files are read again and whose pictures are asked for again.
  */
 export async function commitOutcomes(
   db: Kysely<DB>,
@@ -31,7 +39,9 @@ export async function commitOutcomes(
       transaction,
       outcomes.flatMap(({ files }) => files.map(({ id }) => id)),
     )
-    const standing = outcomes.filter(({ files }) => files.every(({ id }) => waiting.has(id)))
+    const due = outcomes.filter(({ files }) => files.every(({ id }) => waiting.has(id)))
+    const overtaken = await findOvertaken(transaction, campaignId, due)
+    const standing = due.filter((outcome) => !overtaken.has(outcome))
     const known = standing.filter(({ planes, stamps }) => planes.length > 0 || stamps !== null)
     const facts = known.map((outcome) => candidateFacts(outcome, factsOf(outcome.name), now))
     const ids = await upsertCandidates(transaction, campaignId, facts, now)
@@ -44,7 +54,7 @@ export async function commitOutcomes(
     const replaced = await deletePlanesOfReplaced(transaction, read)
     const planes = known.flatMap(({ name, planes }) => planes.map((plane) => ({ ...plane, candidateId: idOf(name) })))
     await upsertPlanes(transaction, planes)
-    const imaged = known.flatMap(({ name, stamps }) => (stamps === null ? [] : { id: idOf(name), stamps }))
+    const imaged = known.flatMap(({ name, stamps }) => (stamps === null ? [] : { id: idOf(name), name, stamps }))
     const stamps = imaged.flatMap(({ id, stamps }) => stamps.map((stamp) => ({ ...stamp, candidateId: id })))
     await replaceStamps(
       transaction,
@@ -57,15 +67,41 @@ export async function commitOutcomes(
     await setFilesImaged(
       transaction,
       imaged.map(({ id }) => id),
+      NOT_IMAGED,
       now,
     )
     const done = new Set(imaged.map(({ id }) => id))
+    const redrawn = imaged.filter(({ name }) => standing.some((one) => one.name === name && one.planes.length > 0))
+    const isLate = await deleteLaterStamps(
+      transaction,
+      redrawn.map(({ id }) => id),
+      recipeId,
+    )
+    const drawAgain = [...overtaken].some(({ files }) => files.length === 0)
+    if (isLate || drawAgain) await requestImaging(transaction, campaignId)
     await imageLater(
       transaction,
       campaignId,
       replaced.filter((id) => !done.has(id)),
     )
   })
+}
+
+const keyOf = ({ band, hdu, planeIndex, fileId }: PlannedPlane): string => `${band} ${hdu} ${planeIndex} ${fileId}`
+
+/** The outcomes whose candidates have other planes now than they were to be drawn with. */
+async function findOvertaken(
+  db: Kysely<DB>,
+  campaignId: number,
+  outcomes: readonly CandidateOutcome[],
+): Promise<Set<CandidateOutcome>> {
+  const names = outcomes.map(({ name }) => name)
+  const held = groupBy(await listHeldPlanes(db, campaignId, names), ({ candidate }) => candidate)
+  const overtaken = outcomes.filter(({ name, planned }) => {
+    const now = new Set((held.get(name) ?? []).map(keyOf))
+    return now.size !== planned.length || planned.some((plane) => !now.has(keyOf(plane)))
+  })
+  return new Set(overtaken)
 }
 
 function candidateFacts(outcome: CandidateOutcome, manifest: ManifestFacts | undefined, now: string): CandidateFacts {

@@ -2,7 +2,16 @@ import { separationArcsec } from '@/lib/science/sky/separation'
 import { bandTaken } from '@/lib/work/intake/refusals'
 import { drawStamps } from './draw-stamps'
 import { bandPlane, readCutouts, readHeldPlane, type Cutout } from './read-cutout'
-import type { CandidateOutcome, CandidateToImage, FileOutcome, FileToRead, ImageTask, StampMade } from './worker-tasks'
+import {
+  NOT_IMAGED,
+  plannedPlanes,
+  type CandidateOutcome,
+  type CandidateToImage,
+  type FileOutcome,
+  type FileToRead,
+  type ImageTask,
+  type StampMade,
+} from './worker-tasks'
 
 /** Farther than this from the other position of the same candidate, a person should look (common practice, no source). */
 const FAR_ARCSEC = 5
@@ -33,6 +42,7 @@ export async function imageCandidate(
   addPositionNotes(files, ordered, candidate)
   const outcome: CandidateOutcome = {
     name: candidate.name,
+    planned: plannedPlanes(candidate),
     files,
     planes: [...read.values()].map(({ plane }) => plane),
     position: ordered.find(({ centre }) => centre !== null)?.centre ?? null,
@@ -41,7 +51,7 @@ export async function imageCandidate(
     imagingFault: null,
   }
   if (unreadable.length > 0) {
-    outcome.imagingFault = `Not imaged: ${unreadable.join(', ')} can no longer be read on the server. Send it again under the same name.`
+    outcome.imagingFault = `${NOT_IMAGED}${unreadable.join(', ')} can no longer be read on the server. Send it again under the same name.`
     return async () => outcome
   }
   if (ordered.length === 0) return async () => outcome
@@ -59,7 +69,10 @@ function startDrawing(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageT
     if (!(stamps instanceof Error)) return { ...outcome, stamps }
     // A full disk is no fault of the files: the whole job is tried again later.
     if ('code' in stamps) throw stamps
-    return { ...outcome, imagingFault: `Read, but its pictures could not be made: ${stamps.message}` }
+    return {
+      ...outcome,
+      imagingFault: `${NOT_IMAGED}it is read, but its pictures could not be made (${stamps.message}).`,
+    }
   }
 }
 

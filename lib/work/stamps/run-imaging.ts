@@ -3,7 +3,7 @@ import { log } from '@/lib/platform/log'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
 import type { CampaignWork, ImagingTools } from './campaign-work'
 import { commitOutcomes } from './commit-outcomes'
-import type { CandidateOutcome, CandidateToImage } from './worker-tasks'
+import { plannedPlanes, type CandidateOutcome, type CandidateToImage } from './worker-tasks'
 
 /**
  * Sixteen candidates a task and a transaction: fewer pay more for the commit's sync than they gain, more make the progress
@@ -94,6 +94,7 @@ function readerFailed(candidate: CandidateToImage, error: unknown): CandidateOut
   const reason = `Reading it failed inside Ringside (${why}). The file is kept; tell an administrator.`
   return {
     name: candidate.name,
+    planned: plannedPlanes(candidate),
     files: candidate.files.map(({ id }) => ({
       id,
       fate: 'refused',

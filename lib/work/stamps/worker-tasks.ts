@@ -72,8 +72,23 @@ export interface StampMade {
   note: string | null
 }
 
+export interface PlannedPlane {
+  band: string
+  hdu: number
+  planeIndex: number
+  fileId: number
+}
+
+export const plannedPlanes = ({ held }: CandidateToImage): PlannedPlane[] =>
+  held.map(({ band, hdu, planeIndex, file }) => ({ band, hdu, planeIndex, fileId: file.id }))
+
+/** Begins the part of a file's reason that is true until its candidate is imaged. */
+export const NOT_IMAGED = 'Not imaged: '
+
 export interface CandidateOutcome {
   name: string
+  /** The planes that it was to be drawn with: the outcome holds only where the candidate still has these. */
+  planned: PlannedPlane[]
   files: FileOutcome[]
   /** Of the files read now. */
   planes: PlaneRead[]
