@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { plainText } from '@/lib/platform/problems/plain-text'
 import { CANNOT_JUDGE_REASONS, TAGS } from './tags'
 
 export const MOST_REMARK_CHARACTERS = 2000
@@ -17,10 +18,11 @@ export const GradeInput = z
       .max(TAGS.length)
       .default([])
       .transform((tags) => TAGS.filter((tag) => tags.includes(tag))),
-    remark: z
-      .string()
-      .trim()
-      .max(MOST_REMARK_CHARACTERS, `A remark has at most ${MOST_REMARK_CHARACTERS} characters.`)
+    remark: plainText('The remark')
+      .refine(
+        (text) => text.length <= MOST_REMARK_CHARACTERS,
+        `A remark has at most ${MOST_REMARK_CHARACTERS} characters.`,
+      )
       .nullish()
       .transform((text) => text || null),
     view: z

@@ -1,10 +1,12 @@
 import { z } from 'zod'
+import { plainText } from '@/lib/platform/problems/plain-text'
 
-export const PersonName = z
-  .string()
-  .trim()
-  .min(1, 'Give the name that the others in your campaigns will see.')
-  .max(80, 'The name has at most 80 characters.')
+export const PersonName = plainText('The name').pipe(
+  z
+    .string()
+    .min(1, 'Give the name that the others in your campaigns will see.')
+    .max(80, 'The name has at most 80 characters.'),
+)
 
 export const EmailAddress = z
   .string()

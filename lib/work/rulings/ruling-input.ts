@@ -1,12 +1,14 @@
 import { z } from 'zod'
+import { plainText } from '@/lib/platform/problems/plain-text'
 
 export const LONGEST_REASON = 2000
 
-const Reason = z
-  .string()
-  .trim()
-  .min(1, 'Give a reason: it is kept with the ruling, and everybody in the campaign can read it.')
-  .max(LONGEST_REASON, `The reason has at most ${LONGEST_REASON} characters.`)
+const Reason = plainText('The reason').pipe(
+  z
+    .string()
+    .min(1, 'Give a reason: it is kept with the ruling, and everybody in the campaign can read it.')
+    .max(LONGEST_REASON, `The reason has at most ${LONGEST_REASON} characters.`),
+)
 
 /** What a lead can decide: one of the candidate's ends, more looks, or to let the verdict stand. */
 export const RulingInput = z
