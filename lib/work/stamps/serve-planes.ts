@@ -11,8 +11,11 @@ import type { CampaignPermit } from '@/lib/work/people/permission'
 import { planesHash } from './planes-hash'
 import type { PlanesRunner } from './worker-tasks'
 
-/** Two bytes a pixel before zipping: at most 12 MiB to a browser. A cutout of 1,000 by 1,000 pixels in six bands fits. */
-export const MOST_PIXELS = 6 * 1024 * 1024
+/**
+ * Of all bands together. Two bytes a pixel, and with what the views need at most 2.5 times as many planes: 20 MiB before zipping.
+ * A cutout of 1,000 by 1,000 pixels in four bands fits.
+ */
+export const MOST_PIXELS = 4 * 1024 * 1024
 
 export interface ServedPlanes {
   hash: string
