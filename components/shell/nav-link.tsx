@@ -3,6 +3,7 @@
 import Link from 'next/link'
 import { usePathname } from 'next/navigation'
 import { useEffect, useRef } from 'react'
+import { LiveCount, type CountSource } from './live-count'
 
 export function NavLink({
   href,
@@ -12,7 +13,7 @@ export function NavLink({
 }: {
   href: string
   label: string
-  count?: number
+  count?: CountSource
   exact?: boolean
 }) {
   const path = usePathname()
@@ -32,7 +33,7 @@ export function NavLink({
       }`}
     >
       {label}
-      {count === undefined ? null : <span className="figures text-small">{count.toLocaleString('en')}</span>}
+      {count ? <LiveCount {...count} /> : null}
     </Link>
   )
 }

@@ -2,6 +2,7 @@ import { CircleUser } from 'lucide-react'
 import Link from 'next/link'
 import type { ReactNode } from 'react'
 import { Mark } from '@/components/ui/mark'
+import type { CountSource } from './live-count'
 import { NavLink } from './nav-link'
 import { SignOutButton } from './sign-out-button'
 import { ThemeSwitch } from './theme-switch'
@@ -9,7 +10,7 @@ import { ThemeSwitch } from './theme-switch'
 export interface ShellLink {
   href: string
   label: string
-  count?: number
+  count?: CountSource
   exact?: boolean
 }
 

@@ -194,8 +194,10 @@ describe('the main path', () => {
   it('shows nobody the grades of others first, and nothing to strangers', async () => {
     const answer = await graderPages[0].request.get(`${server.url}/api/campaigns/marsh-test/catalogue.csv`)
     expect(answer.status()).toBe(403)
+    const counts = await graderPages[0].request.get(`${server.url}/api/campaigns/marsh-test/counts`)
+    expect(counts.status()).toBe(403)
     const stranger = await newPage()
-    for (const path of ['', '/files', '/candidates', '/queue', '/catalogue.csv', '/catalogue.vot']) {
+    for (const path of ['', '/counts', '/files', '/candidates', '/queue', '/catalogue.csv', '/catalogue.vot']) {
       const refused = await stranger.request.get(`${server.url}/api/campaigns/marsh-test${path}`)
       expect([401, 404], path).toContain(refused.status())
     }
@@ -207,7 +209,7 @@ describe('the main path', () => {
     await stranger.waitForURL(`**${HOME}/catalogue?sort=name`)
   })
 
-  it('is accessible on every page, night and day, and throws nothing', async () => {
+  it('is accessible on every page, at night on a desk and by day on a phone, and throws nothing', async () => {
     const PAGES = [
       '',
       '/intake',
@@ -227,12 +229,19 @@ describe('the main path', () => {
       '/admin/outbox',
       '/admin/accounts',
     ]
-    for (const colorScheme of ['dark', 'light'] as const) {
+    const SETTINGS = [
+      { colorScheme: 'dark', width: 1440, height: 900 },
+      { colorScheme: 'light', width: 390, height: 844 },
+    ] as const
+    for (const { colorScheme, ...size } of SETTINGS) {
       await lead.emulateMedia({ colorScheme })
+      await lead.setViewportSize(size)
       for (const path of paths) {
         await lead.goto(server.url + path)
         await lead.waitForLoadState('networkidle')
         await expectAccessible(lead)
+        const overflow = await lead.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
+        expect(overflow, `${path} is wider than the window of ${size.width}`).toBeLessThanOrEqual(0)
       }
     }
     // Refused files, a wrong code and a refused export are answers, not errors of the pages.

@@ -9,18 +9,16 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
   const counts = await campaignCounts(db, permit)
   const home = `/campaigns/${slug}`
   const lead = permit.role === 'lead'
+  // None for graders: a number that leaves calibration stamps out beside a list that hides them would give their number away.
+  const count = (field: keyof typeof counts) =>
+    permit.role === 'grader' ? undefined : { url: `/api/campaigns/${slug}/counts`, field, initial: counts[field] }
   const links: ShellLink[] = [
     { href: home, label: 'Overview', exact: true },
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/bench`, label: 'Bench' }]),
     ...(lead ? [{ href: `${home}/intake`, label: 'Intake' }] : []),
-    // Without counts for graders: what leaves out calibration stamps beside a list that hides them would give their number away.
-    {
-      href: `${home}/candidates`,
-      label: 'Candidates',
-      count: permit.role === 'grader' ? undefined : counts.candidates,
-    },
-    ...(lead ? [{ href: `${home}/splits`, label: 'Splits', count: counts.split }] : []),
-    { href: `${home}/catalogue`, label: 'Catalogue', count: permit.role === 'grader' ? undefined : counts.confirmed },
+    { href: `${home}/candidates`, label: 'Candidates', count: count('candidates') },
+    ...(lead ? [{ href: `${home}/splits`, label: 'Splits', count: count('split') }] : []),
+    { href: `${home}/catalogue`, label: 'Catalogue', count: count('confirmed') },
     ...(lead
       ? [
           { href: `${home}/people`, label: 'People' },
