@@ -48,8 +48,8 @@ export function DropZone({ onChosen }: { onChosen: (chosen: Chosen) => void }) {
         {opening
           ? 'Opening what you dropped…'
           : over
-            ? 'Let go to send.'
-            : 'Drop FITS files, folders and a CSV manifest here.'}
+            ? 'Let go to take them in hand.'
+            : 'Drop FITS files, folders, archives (zip, tar, tar.gz) and a CSV manifest here.'}
       </p>
       <div className="flex flex-wrap gap-3">
         <Button tone="lamp" onClick={() => files.current?.click()}>

@@ -14,19 +14,24 @@ const state = (change: Partial<UploadState>): UploadState => ({
   sending: [],
   failed: [],
   active: false,
+  paused: false,
+  stalled: false,
+  cancelled: 0,
   ...change,
 })
 
+const brakes = () => ({ retryFailed: vi.fn(), pause: vi.fn(), goOn: vi.fn(), cancel: vi.fn() })
+
 describe('the progress of uploads', () => {
   it('is nothing before anything is sent', () => {
-    const { container } = render(<UploadProgress state={state({ total: 0 })} left={[]} onRetry={() => {}} />)
+    const { container } = render(<UploadProgress state={state({ total: 0 })} left={[]} queue={brakes()} />)
     expect(container).toBeEmptyDOMElement()
   })
 
   it('shows the whole and each file under way', () => {
     const sending = [{ id: 1, name: 'SWS1_g.fits', bytes: 200, sent: 50, fault: null }]
     render(
-      <UploadProgress state={state({ active: true, done: 4, bytesSent: 250, sending })} left={[]} onRetry={() => {}} />,
+      <UploadProgress state={state({ active: true, done: 4, bytesSent: 250, sending })} left={[]} queue={brakes()} />,
     )
     expect(screen.getByRole('status')).toHaveTextContent('Sending: 4 of 36 files are on the server.')
     expect(screen.getByRole('progressbar', { name: 'Files sent' })).toHaveAttribute('aria-valuenow', '25')
@@ -34,16 +39,33 @@ describe('the progress of uploads', () => {
   })
 
   it('names what did not arrive and why, and sends it again on a click', async () => {
-    const onRetry = vi.fn()
+    const queue = brakes()
     const failed = [{ id: 1, name: 'SWS1_g.fits', bytes: 1, sent: 0, fault: 'The connection broke.' }]
-    render(<UploadProgress state={state({ done: 35, failed })} left={[]} onRetry={onRetry} />)
+    render(<UploadProgress state={state({ done: 35, failed })} left={[]} queue={queue} />)
     expect(screen.getByRole('alert')).toHaveTextContent('SWS1_g.fits: The connection broke.')
     await userEvent.click(screen.getByRole('button', { name: 'Send them again' }))
-    expect(onRetry).toHaveBeenCalledOnce()
+    expect(queue.retryFailed).toHaveBeenCalledOnce()
+  })
+
+  it('has brakes while it sends, and says when the connection is lost', async () => {
+    const queue = brakes()
+    const { rerender } = render(<UploadProgress state={state({ active: true })} left={[]} queue={queue} />)
+    await userEvent.click(screen.getByRole('button', { name: 'Pause sending' }))
+    await userEvent.click(screen.getByRole('button', { name: 'Cancel sending' }))
+    expect(queue.pause).toHaveBeenCalledOnce()
+    expect(queue.cancel).toHaveBeenCalledOnce()
+    rerender(<UploadProgress state={state({ active: true, paused: true })} left={[]} queue={queue} />)
+    await userEvent.click(screen.getByRole('button', { name: 'Go on sending' }))
+    expect(queue.goOn).toHaveBeenCalledOnce()
+    rerender(<UploadProgress state={state({ active: true, stalled: true })} left={[]} queue={queue} />)
+    expect(screen.getByRole('status')).toHaveTextContent('The connection is lost: 0 of 36 files are on the server.')
+    rerender(<UploadProgress state={state({ done: 5, cancelled: 31 })} left={[]} queue={queue} />)
+    expect(screen.queryByRole('button')).toBeNull()
+    expect(screen.getByRole('status')).toHaveTextContent('5 files sent; 31 not sent because sending was cancelled.')
   })
 
   it('says how many were here before', () => {
-    render(<UploadProgress state={state({ done: 36, duplicates: 2 })} left={[]} onRetry={() => {}} />)
+    render(<UploadProgress state={state({ done: 36, duplicates: 2 })} left={[]} queue={brakes()} />)
     expect(screen.getByRole('status')).toHaveTextContent('36 files sent, 2 of them here before.')
   })
 })

@@ -3,21 +3,36 @@
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
 import { counted } from '@/components/campaigns/in-words'
+import { ToolButton } from '@/components/table/tool-button'
 import { fileSize } from './file-size'
 import { ProgressBar } from './progress-bar'
-import type { UploadState } from './upload-queue'
+import type { UploadQueue, UploadState } from './upload-queue'
 
 const FAILED_SHOWN = 20
 
-function sentence({ done, total, failed, duplicates, active }: UploadState): string {
-  if (active) return `Sending: ${done.toLocaleString('en')} of ${counted(total, 'file')} are on the server.`
+function sentence({ done, total, failed, duplicates, active, paused, stalled, cancelled }: UploadState): string {
+  if (active) {
+    const counts = `${done.toLocaleString('en')} of ${counted(total, 'file')} are on the server`
+    if (paused) return `Sending is paused: ${counts}.`
+    if (stalled) return `The connection is lost: ${counts}. It goes on by itself when the server can be reached.`
+    return `Sending: ${counts}.`
+  }
   const twice = duplicates > 0 ? `, ${duplicates.toLocaleString('en')} of them here before` : ''
   const lost = failed.length > 0 ? `; ${failed.length.toLocaleString('en')} did not arrive` : ''
-  return `${counted(done, 'file')} sent${twice}${lost}.`
+  const left = cancelled > 0 ? `; ${cancelled.toLocaleString('en')} not sent because sending was cancelled` : ''
+  return `${counted(done, 'file')} sent${twice}${lost}${left}.`
 }
 
 /** What this browser is sending; what the server does with it stands below. */
-export function UploadProgress({ state, left, onRetry }: { state: UploadState; left: string[]; onRetry: () => void }) {
+export function UploadProgress({
+  state,
+  left,
+  queue,
+}: {
+  state: UploadState
+  left: string[]
+  queue: Pick<UploadQueue, 'retryFailed' | 'pause' | 'goOn' | 'cancel'>
+}) {
   if (state.total === 0 && left.length === 0) return null
   return (
     <section aria-label="Files being sent" className="flex flex-col gap-3">
@@ -31,7 +46,20 @@ export function UploadProgress({ state, left, onRetry }: { state: UploadState; l
               {fileSize(state.bytesSent)} of {fileSize(state.bytes)}
             </p>
           </div>
-          {state.active ? <ProgressBar label="Files sent" done={state.bytesSent} total={state.bytes} /> : null}
+          {state.active ? (
+            <>
+              <ProgressBar label="Files sent" done={state.bytesSent} total={state.bytes} />
+              <div className="flex flex-wrap items-center gap-3">
+                <ToolButton onClick={() => (state.paused ? queue.goOn() : queue.pause())}>
+                  {state.paused ? 'Go on sending' : 'Pause sending'}
+                </ToolButton>
+                <ToolButton onClick={() => queue.cancel()}>Cancel sending</ToolButton>
+                <span className="text-note text-mute">
+                  Closed by accident? Choose the same folder again: only what is missing is sent.
+                </span>
+              </div>
+            </>
+          ) : null}
         </>
       ) : null}
       {state.sending.length > 0 ? (
@@ -66,7 +94,7 @@ export function UploadProgress({ state, left, onRetry }: { state: UploadState; l
               ))}
               {state.failed.length > FAILED_SHOWN ? <li>and {state.failed.length - FAILED_SHOWN} more</li> : null}
             </ul>
-            <Button onClick={onRetry}>Send them again</Button>
+            <Button onClick={() => queue.retryFailed()}>Send them again</Button>
           </div>
         </Notice>
       ) : null}

@@ -1,5 +1,5 @@
 import { beforeEach, describe, expect, it, vi } from 'vitest'
-import type { SentFile } from './send-file'
+import { SendFault, type SentFile } from './send-file'
 import { UploadQueue } from './upload-queue'
 
 interface Sending {
@@ -7,6 +7,7 @@ interface Sending {
   resolve: (sent: SentFile) => void
   reject: (error: Error) => void
   onSent: (bytes: number) => void
+  signal: AbortSignal
 }
 
 let sending: Sending[]
@@ -15,8 +16,9 @@ beforeEach(() => {
   sending = []
   queue = new UploadQueue(
     'north',
-    (address, _file, onSent) =>
-      new Promise((resolve, reject) => void sending.push({ address, resolve, reject, onSent })),
+    (address, _file, onSent, signal) =>
+      new Promise((resolve, reject) => void sending.push({ address, resolve, reject, onSent, signal })),
+    async (file) => `hash of ${file.name}`,
   )
 })
 
@@ -73,5 +75,62 @@ describe('the queue of uploads', () => {
     sending[0].resolve({ fate: 'stored' })
     await settle()
     expect(listener).not.toHaveBeenCalled()
+  })
+
+  it('sends nothing again whose bytes are here, and sends what has changed', async () => {
+    queue.add([
+      { ...file('1'), known: 'hash of 1' },
+      { ...file('2'), known: 'hash of an older 2' },
+    ])
+    await settle()
+    expect(sending.map(({ address }) => address)).toEqual(['/api/campaigns/north/files/2'])
+    sending[0].resolve({ fate: 'stored' })
+    await settle()
+    expect(queue.getState()).toMatchObject({ active: false, done: 2, duplicates: 1 })
+  })
+
+  it('begins no other file while it is paused, and goes on where it was', async () => {
+    queue.add(['1', '2', '3', '4', '5'].map((name) => file(name)))
+    queue.pause()
+    sending[0].resolve({ fate: 'stored' })
+    await settle()
+    await vi.waitFor(() => expect(queue.getState()).toMatchObject({ paused: true, active: true, done: 1 }))
+    expect(sending).toHaveLength(4)
+    queue.goOn()
+    expect(sending).toHaveLength(5)
+    expect(queue.getState().paused).toBe(false)
+  })
+
+  it('drops what has not arrived when it is cancelled, and takes a new delivery after it', async () => {
+    queue.add(['1', '2', '3', '4', '5', '6'].map((name) => file(name)))
+    sending[0].resolve({ fate: 'stored' })
+    await settle()
+    queue.cancel()
+    for (const { signal, reject } of sending.slice(1)) {
+      expect(signal.aborted).toBe(true)
+      reject(new SendFault('cancelled', 'Sending was cancelled.'))
+    }
+    await settle()
+    expect(queue.getState()).toMatchObject({ active: false, done: 1, cancelled: 5, failed: [] })
+    queue.add([file('7')])
+    expect(sending.at(-1)?.signal.aborted).toBe(false)
+    expect(queue.getState()).toMatchObject({ total: 1, cancelled: 0 })
+  })
+
+  it('waits for a lost connection and goes on by itself, without losing a file', async () => {
+    vi.useFakeTimers()
+    try {
+      queue.add(['1', '2'].map((name) => file(name)))
+      for (const { reject } of sending) reject(new SendFault('connection', 'The connection broke.'))
+      await vi.advanceTimersByTimeAsync(200)
+      expect(queue.getState()).toMatchObject({ stalled: true, active: true, failed: [] })
+      await vi.advanceTimersByTimeAsync(3000)
+      expect(sending).toHaveLength(4)
+      for (const { resolve } of sending.slice(2)) resolve({ fate: 'stored' })
+      await vi.advanceTimersByTimeAsync(200)
+      expect(queue.getState()).toMatchObject({ stalled: false, active: false, done: 2, failed: [] })
+    } finally {
+      vi.useRealTimers()
+    }
   })
 })

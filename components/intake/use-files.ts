@@ -34,11 +34,16 @@ async function fetchPage(key: string): Promise<FilePage> {
 }
 
 /** A page of files, asked for every second while files are sent or read, and once more when that is over. */
-export function useFiles(slug: string, filter: FileFilter, initial: FilePage, sending: boolean) {
-  const isFirst = filter.fate === null && filter.search === '' && filter.cursor === null
-  const [working, setWorking] = useState(initial.summary.working)
+export function useFiles(
+  slug: string,
+  filter: FileFilter,
+  initial: { filter: FileFilter; page: FilePage },
+  sending: boolean,
+) {
+  const isFirst = filesKey(slug, filter) === filesKey(slug, initial.filter)
+  const [working, setWorking] = useState(initial.page.summary.working)
   const answer = useSWR<FilePage, Error>(filesKey(slug, filter), fetchPage, {
-    fallbackData: isFirst ? initial : undefined,
+    fallbackData: isFirst ? initial.page : undefined,
     keepPreviousData: true,
     // A number and not a function of the data: SWR starts its clock anew with each new function, and a page that is drawn
     // ten times a second while files are sent would never ask.

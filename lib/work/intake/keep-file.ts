@@ -9,6 +9,7 @@ import {
   setFileColumns,
   setFileStored,
 } from '@/db/queries/intake'
+import { hasFileOfName } from '@/db/queries/duplicates'
 import type { DB } from '@/db/schema'
 import type { FileFate, FileRow } from '@/db/schema/intake'
 import { recordEvent } from '@/lib/platform/audit/record-event'
@@ -16,6 +17,7 @@ import { isoTime } from '@/lib/platform/clock'
 import type { StoredBlob } from '@/lib/platform/storage/blob-store'
 import { kindOfName } from './file-name'
 import { requestReading, requestUnpacking } from './request-reading'
+import { areElsewhere } from './same-bytes'
 
 /** Whose delivery a file is part of. */
 export interface Delivery {
@@ -38,8 +40,8 @@ const IN_WORDS: Record<FileFate, string> = {
 
 /**
  * The row of a file whose bytes are on disk; reading it is asked for in the same transaction, in which this is called. The same
- * bytes under the same name change nothing; under another name they are a duplicate of the file in use; other bytes under an
- * old name replace that file once they are read.
+ * bytes under the same name change nothing; other bytes under an old name replace that file once they are read. The bytes of a
+ * file in use under a new name are a duplicate of it, unless names or manifests tell another candidate or band.
  */
 export async function keepFile(db: Kysely<DB>, delivery: Delivery, name: string, blob: StoredBlob): Promise<FileRow> {
   const same = await findFileByContent(db, delivery.campaignId, blob.sha256, name)
@@ -67,11 +69,25 @@ async function keepSame(db: Kysely<DB>, delivery: Delivery, same: FileRow): Prom
   return { ...same, fate: 'stored', fault: null, reason, replaced_by: null }
 }
 
+/** The file that this one repeats; null where it corrects the one of its own name or belongs to another place. */
+async function findTwin(
+  db: Kysely<DB>,
+  campaignId: number,
+  name: string,
+  sha256: string,
+  kind: FileRow['kind'],
+): Promise<FileRow | null> {
+  const twin = await findFileInUse(db, campaignId, sha256, kind)
+  if (!twin || (await hasFileOfName(db, campaignId, name))) return null
+  const [isElsewhere] = kind === 'fits' ? await areElsewhere(db, campaignId, [{ name, twin }]) : [false]
+  return isElsewhere ? null : twin
+}
+
 async function keepNew(db: Kysely<DB>, delivery: Delivery, name: string, blob: StoredBlob): Promise<FileRow> {
   const now = isoTime()
   const { campaignId, personId } = delivery
   const kind = kindOfName(name)
-  const twin = await findFileInUse(db, campaignId, blob.sha256, kind)
+  const twin = await findTwin(db, campaignId, name, blob.sha256, kind)
   const row = await insertFile(db, {
     campaignId,
     batchId: await delivery.batchId(db),

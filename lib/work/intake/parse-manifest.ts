@@ -36,10 +36,10 @@ function cell(values: Record<string, string>, name: string | undefined): string 
 /** Never throws on bad content: every value that cannot be used is named with its line. */
 export function parseManifest(bytes: Uint8Array, chosen: ChosenColumns = {}): ParsedManifest {
   const table = readCsv(bytes)
-  return entriesOf(table, manifestColumns(table.header, chosen))
+  return parseManifestTable(table, manifestColumns(table.header, chosen))
 }
 
-function entriesOf(table: CsvTable, columns: ManifestHeaders): ParsedManifest {
+export function parseManifestTable(table: CsvTable, columns: ManifestHeaders): ParsedManifest {
   const problems = table.problems.map(({ line, message }) => (line === null ? message : `Line ${line}: ${message}`))
   if (columns.file === undefined && columns.candidate === undefined) {
     const found = table.header.length > 0 ? `it has ${table.header.slice(0, 12).join(', ')}` : 'it has none'

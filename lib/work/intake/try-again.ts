@@ -7,6 +7,7 @@ import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { CURABLE_FAULTS } from './refusals'
 import { requestReading, requestUnpacking } from './request-reading'
+import { readElsewhere } from './same-bytes'
 
 /** A lead has every refused file looked at again. Returns how many. */
 export async function tryRefusedAgain(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<number> {
@@ -28,7 +29,8 @@ export async function tryRefusedAgain(db: Kysely<DB>, permit: CampaignPermit<'le
 
 /** After a manifest came or the name pattern changed: the files that could not be matched are tried again. In a transaction. */
 export async function tryUnmatchedAgain(db: Kysely<DB>, campaignId: number): Promise<number> {
-  const files = await setRefusedStored(db, campaignId, CURABLE_FAULTS, isoTime())
+  const refused = await setRefusedStored(db, campaignId, CURABLE_FAULTS, isoTime())
+  const files = refused + (await readElsewhere(db, campaignId))
   if (files > 0) await requestReading(db, campaignId)
   return files
 }
