@@ -161,14 +161,17 @@ export async function setFileColumns(db: Kysely<DB>, id: number, columns: FileRo
   await db.updateTable('file').set({ columns }).where('id', '=', id).execute()
 }
 
-/** What was a duplicate of files that are no longer in use stands for itself again. */
+/**
+ * What was a duplicate of files that are no longer in use stands for itself again, and so does what was refused because they had
+ * its band.
+ */
 export async function releaseDuplicates(db: Kysely<DB>, fileIds: readonly number[], now: string): Promise<void> {
   if (fileIds.length === 0) return
   await db
     .updateTable('file')
-    .set({ fate: 'stored', reason: null, duplicate_of: null, updated_at: now })
+    .set({ fate: 'stored', fault: null, reason: null, duplicate_of: null, updated_at: now })
     .where('duplicate_of', 'in', fileIds)
-    .where('fate', '=', 'duplicate')
+    .where('fate', 'in', ['duplicate', 'refused'])
     .where(inForce(['refused', 'duplicate'], ['stored', 'read', 'imaged']))
     .execute()
 }

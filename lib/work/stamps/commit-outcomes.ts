@@ -7,6 +7,7 @@ import {
   upsertPlanes,
   type CandidateFacts,
 } from '@/db/queries/cutouts'
+import { listReplacedBy } from '@/db/queries/duplicates'
 import { listStillWaiting, releaseDuplicates, setFileFates, type FileFateUpdate } from '@/db/queries/intake'
 import { clearImaged, deleteLaterStamps, replaceStamps, setFilesImaged } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
@@ -50,8 +51,9 @@ export async function commitOutcomes(
       if (id === undefined) throw new Error(`Candidate ${name} was not written`)
       return id
     }
-    const read = standing.flatMap(({ files }) => files.flatMap(({ id, fate }) => (fate === 'read' ? id : [])))
+    const read = standing.flatMap(({ files }) => files.flatMap(({ id, fate }) => (fate === 'refused' ? [] : id)))
     const replaced = await deletePlanesOfReplaced(transaction, read)
+    await releaseDuplicates(transaction, await listReplacedBy(transaction, read), now)
     const planes = known.flatMap(({ name, planes }) => planes.map((plane) => ({ ...plane, candidateId: idOf(name) })))
     await upsertPlanes(transaction, planes)
     const imaged = known.flatMap(({ name, stamps }) => (stamps === null ? [] : { id: idOf(name), name, stamps }))

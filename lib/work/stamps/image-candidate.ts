@@ -9,8 +9,10 @@ import {
   type CandidateToImage,
   type FileOutcome,
   type FileToRead,
+  type HeldPlane,
   type ImageTask,
   type StampMade,
+  type StoredFile,
 } from './worker-tasks'
 
 /** Farther than this from the other position of the same candidate, a person should look (common practice, no source). */
@@ -76,25 +78,36 @@ function startDrawing(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageT
   }
 }
 
+interface OpenedFile {
+  file: FileToRead
+  cutouts: Cutout[]
+  notes: string[]
+}
+
 async function gatherFiles(candidate: CandidateToImage, bands: readonly string[]): Promise<Gathered> {
-  const gathered: Gathered = { files: [], read: new Map(), replaced: new Set() }
+  const outcomes = new Map<number, FileOutcome>()
+  const opened: OpenedFile[] = []
   for (const file of candidate.files) {
     const result = await readCutouts(file, bands)
-    if ('refusal' in result) {
+    if (!('refusal' in result)) opened.push({ file, ...result })
+    else {
       const kept = heldUnderName(candidate, file).length > 0 ? ' The earlier file of this name stays in use.' : ''
       const { fault, reason } = result.refusal
-      gathered.files.push({ id: file.id, fate: 'refused', fault, reason: reason + kept, duplicateOf: null })
-      continue
+      outcomes.set(file.id, { id: file.id, fate: 'refused', fault, reason: reason + kept, duplicateOf: null })
     }
-    const clash = clashOf(candidate, file, result.cutouts, gathered)
-    if (clash) {
-      gathered.files.push(clash)
-      continue
-    }
-    for (const cutout of result.cutouts) gathered.read.set(cutout.plane.band, cutout)
-    for (const { file: old } of heldUnderName(candidate, file)) gathered.replaced.add(old.id)
-    const reason = result.notes.join(' ') || null
-    gathered.files.push({ id: file.id, fate: 'read', fault: null, reason, duplicateOf: null })
+  }
+  const standing = settleClashes(candidate, opened, outcomes)
+  const gathered: Gathered = { files: [], read: new Map(), replaced: new Set() }
+  for (const { file, cutouts, notes } of standing) {
+    for (const cutout of cutouts) gathered.read.set(cutout.plane.band, cutout)
+    const reason = notes.join(' ') || null
+    outcomes.set(file.id, { id: file.id, fate: 'read', fault: null, reason, duplicateOf: null })
+  }
+  for (const file of candidate.files) {
+    const outcome = outcomes.get(file.id)
+    if (!outcome) continue
+    gathered.files.push(outcome)
+    if (outcome.fate !== 'refused') for (const old of heldUnderName(candidate, file)) gathered.replaced.add(old.file.id)
   }
   return gathered
 }
@@ -102,25 +115,48 @@ async function gatherFiles(candidate: CandidateToImage, bands: readonly string[]
 const heldUnderName = (candidate: CandidateToImage, file: FileToRead) =>
   candidate.held.filter((held) => held.file.name === file.name && held.file.id !== file.id)
 
-/** A band that another file has given already: the same bytes are a duplicate, other ones are refused. */
-function clashOf(
+/**
+ * Leaves out, one by one, the files that give a band which another has given; each that is left out may leave its earlier
+ * version in force, which has its band again. So files whose bands were mixed up can be corrected together.
+ */
+function settleClashes(
   candidate: CandidateToImage,
-  file: FileToRead,
-  cutouts: Cutout[],
-  gathered: Gathered,
+  opened: readonly OpenedFile[],
+  outcomes: Map<number, FileOutcome>,
+): OpenedFile[] {
+  let standing = [...opened]
+  for (;;) {
+    const givingWay = new Set(
+      candidate.files
+        .filter(({ id }) => outcomes.get(id)?.fate !== 'refused')
+        .flatMap((file) => heldUnderName(candidate, file).map(({ file: old }) => old.id)),
+    )
+    const held = candidate.held.filter(({ file }) => !givingWay.has(file.id))
+    const clash = firstClash(candidate.name, held, standing)
+    if (!clash) return standing
+    outcomes.set(clash.id, clash)
+    standing = standing.filter(({ file }) => file.id !== clash.id)
+  }
+}
+
+/** A band that another file has given already: the same bytes are a duplicate, other ones are refused. */
+function firstClash(
+  candidate: string,
+  held: readonly HeldPlane[],
+  standing: readonly OpenedFile[],
 ): FileOutcome | null {
-  for (const { plane } of cutouts) {
-    const now = gathered.read.get(plane.band)?.plane.fileId
-    const holder =
-      candidate.files.find(({ id }) => id === now) ??
-      candidate.held.find(({ band, file: old }) => band === plane.band && old.name !== file.name && old.id !== file.id)
-        ?.file
-    if (!holder) continue
-    if (holder.sha256 === file.sha256) {
+  const holders = new Map<string, StoredFile>(held.map(({ band, file }) => [band, file]))
+  for (const { file, cutouts } of standing) {
+    for (const { plane } of cutouts) {
+      const holder = holders.get(plane.band)
+      if (!holder || holder.id === file.id) continue
+      const duplicateOf = holder.id
+      if (holder.sha256 !== file.sha256)
+        return { id: file.id, fate: 'refused', ...bandTaken(candidate, plane.band, holder.name), duplicateOf }
       const reason = `The same bytes as '${holder.name}'.`
-      return { id: file.id, fate: 'duplicate', fault: null, reason, duplicateOf: holder.id }
+      return { id: file.id, fate: 'duplicate', fault: null, reason, duplicateOf }
     }
-    return { id: file.id, fate: 'refused', ...bandTaken(candidate.name, plane.band, holder.name), duplicateOf: null }
+    for (const { plane } of cutouts) holders.set(plane.band, file)
   }
   return null
 }

@@ -91,10 +91,11 @@ class Reading {
     for (const { id } of files) this.#refuseEndless(id)
     const page = await matchPage(this.tools, work, files)
     unmatched.push(...page.unmatched)
-    const ready = page.matched.flatMap((matched) => {
-      const group = waiting.add(matched, page.heldBands.get(matched.candidate) ?? 0)
-      return group ? [group] : []
-    })
+    const complete = page.matched.flatMap(
+      (matched) => waiting.add(matched, page.heldBands.get(matched.candidate) ?? 0) ?? [],
+    )
+    // Together, so that files of one candidate that have changed places do not stand in each other's way.
+    const ready = [...groupBy(complete, ({ candidate }) => candidate).values()]
     await this.#tell(page.refused)
     await this.#image(work, ready)
   }

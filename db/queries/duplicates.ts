@@ -1,0 +1,62 @@
+import type { Kysely } from 'kysely'
+import type { DB } from '../schema'
+
+export interface DuplicateFile {
+  id: number
+  name: string
+  /** The file in use that has the same bytes. */
+  twin: { id: number; name: string }
+}
+
+/** Images in force that have the same bytes as another file, by key. */
+export async function listDuplicates(
+  db: Kysely<DB>,
+  campaignId: number,
+  afterId: number,
+  limit: number,
+): Promise<DuplicateFile[]> {
+  const rows = await db
+    .selectFrom('file')
+    .innerJoin('file as twin', 'twin.id', 'file.duplicate_of')
+    .select(['file.id', 'file.name', 'twin.id as twinId', 'twin.name as twinName'])
+    .where('file.campaign_id', '=', campaignId)
+    .where('file.fate', '=', 'duplicate')
+    .where('file.kind', '=', 'fits')
+    .where('file.replaced_by', 'is', null)
+    .where('file.id', '>', afterId)
+    .orderBy('file.id')
+    .limit(limit)
+    .execute()
+  return rows.map(({ id, name, twinId, twinName }) => ({ id, name, twin: { id: twinId, name: twinName } }))
+}
+
+export async function setDuplicatesStored(db: Kysely<DB>, ids: readonly number[], now: string): Promise<void> {
+  if (ids.length === 0) return
+  await db
+    .updateTable('file')
+    .set({ fate: 'stored', fault: null, reason: null, duplicate_of: null, updated_at: now })
+    .where('id', 'in', ids)
+    .where('fate', '=', 'duplicate')
+    .execute()
+}
+
+/** Whether a file of this name is in use or to be read. */
+export async function hasFileOfName(db: Kysely<DB>, campaignId: number, name: string): Promise<boolean> {
+  const row = await db
+    .selectFrom('file')
+    .select('id')
+    .where('campaign_id', '=', campaignId)
+    .where('name', '=', name)
+    .where('replaced_by', 'is', null)
+    .where('fate', 'in', ['stored', 'read', 'imaged'])
+    .limit(1)
+    .executeTakeFirst()
+  return row !== undefined
+}
+
+/** Files that these have replaced. */
+export async function listReplacedBy(db: Kysely<DB>, fileIds: readonly number[]): Promise<number[]> {
+  if (fileIds.length === 0) return []
+  const rows = await db.selectFrom('file').select('id').where('replaced_by', 'in', fileIds).execute()
+  return rows.map(({ id }) => id)
+}
