@@ -14,12 +14,15 @@ interface CatalogueScreenProps {
 }
 
 export function CatalogueScreen({ slug, catalogue, classRule, next }: CatalogueScreenProps) {
-  const { rows, heldBack } = catalogue
-  const all = rows.length + heldBack
+  const { rows, ownOnly } = catalogue
+  const all = rows.length
   if (all === 0) {
     return (
       <div className="px-4 py-6 md:px-6">
-        <EmptyState title="Nothing is confirmed yet">
+        <EmptyState title={ownOnly ? 'Nothing that you have graded is confirmed yet' : 'Nothing is confirmed yet'}>
+          {ownOnly ? (
+            <p>Confirmed candidates that you have not graded are held back, so that nobody’s judgement sways yours.</p>
+          ) : null}
           <p>
             A candidate enters the catalogue when its grades confirm it under the rule of the campaign, or when a lead
             rules so. It then gets its designation, and the list can be downloaded as CSV and VOTable.
@@ -37,14 +40,15 @@ export function CatalogueScreen({ slug, catalogue, classRule, next }: CatalogueS
         <div className="mr-auto">
           <h1 className="text-title font-semibold">
             {all.toLocaleString('en')} confirmed {all === 1 ? 'candidate' : 'candidates'}
+            {ownOnly ? ' that you have graded' : ''}
           </h1>
           <VisualGradeCaution />
           <p className="text-note text-mute">Class: {classRule}.</p>
         </div>
         {catalogue.mayExport ? <Downloads slug={slug} count={rows.length} /> : null}
       </header>
-      {heldBack > 0 ? <HeldBack heldBack={heldBack} all={all} slug={slug} /> : null}
-      {catalogue.mayExport || heldBack > 0 ? null : (
+      {ownOnly ? <HeldBack slug={slug} /> : null}
+      {catalogue.mayExport || ownOnly ? null : (
         <Notice>Files of the catalogue are downloaded by leads and viewers; ask one of them for it.</Notice>
       )}
       {rows.length > 0 ? (

@@ -12,8 +12,8 @@ function Fact({ name, children }: { name: string; children: ReactNode }) {
 
 /** What came with the cutouts: scale, redshifts, the machine's score, and the files themselves. */
 export function CandidateFacts({ evidence }: { evidence: CandidateEvidence }) {
-  const { pixelScaleArcsec, lensRedshift, sourceRedshift, judgement, files } = evidence
-  const score = judgement?.score ?? null
+  const { pixelScaleArcsec, judgement, files } = evidence
+  const { score = null, lensRedshift = null, sourceRedshift = null } = judgement ?? {}
   return (
     <div className="flex flex-col gap-5">
       <dl className="flex flex-wrap gap-x-8 gap-y-3">

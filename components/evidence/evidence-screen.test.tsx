@@ -33,6 +33,8 @@ const JUDGEMENT: Judgement = {
   stateReason: VERDICT.reason,
   calibration: false,
   score: 0.91,
+  lensRedshift: null,
+  sourceRedshift: null,
   votes: { A: 1, B: 2, C: 0, N: 0, U: 0 },
   grades: GRADES,
   verdict: VERDICT,
@@ -48,8 +50,6 @@ const EVIDENCE: CandidateEvidence = {
   raDeg: 10,
   decDeg: -5,
   pixelScaleArcsec: 0.2,
-  lensRedshift: null,
-  sourceRedshift: null,
   files: [{ name: 'SWS0007_g.fits', bands: ['g'] }],
   pictures: {
     views: [

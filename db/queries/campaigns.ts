@@ -54,14 +54,16 @@ export interface CampaignSummary {
   split: number
 }
 
-/** The campaigns that a person is in, newest first. Calibration candidates are not counted. */
+/** The campaigns that a person is in, newest first. Calibration candidates are counted only for graders, to whom they are like any other. */
 export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<CampaignSummary[]> {
   const wanted = sql<number>`(select grades_wanted from rule where rule.campaign_id = campaign.id order by version desc limit 1)`
   return db
     .selectFrom('membership')
     .innerJoin('campaign', 'campaign.id', 'membership.campaign_id')
     .leftJoin('candidate', (join) =>
-      join.onRef('candidate.campaign_id', '=', 'campaign.id').on('candidate.truth', 'is', null),
+      join
+        .onRef('candidate.campaign_id', '=', 'campaign.id')
+        .on((e) => e.or([e('candidate.truth', 'is', null), e('membership.role', '=', 'grader')])),
     )
     .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
     .select((e) => [
@@ -175,7 +177,11 @@ export interface CampaignCounts {
 }
 
 /** Without calibration candidates. */
-export async function countCandidates(db: Kysely<DB>, campaignId: number): Promise<CampaignCounts> {
+export async function countCandidates(
+  db: Kysely<DB>,
+  campaignId: number,
+  withCalibration = false,
+): Promise<CampaignCounts> {
   return db
     .selectFrom('candidate')
     .select((e) => [
@@ -187,6 +193,6 @@ export async function countCandidates(db: Kysely<DB>, campaignId: number): Promi
       e.fn.countAll<number>().filterWhere('state', '=', 'set aside').as('setAside'),
     ])
     .where('campaign_id', '=', campaignId)
-    .where('truth', 'is', null)
+    .$if(!withCalibration, (query) => query.where('truth', 'is', null))
     .executeTakeFirstOrThrow()
 }

@@ -56,10 +56,15 @@ export interface NamedCandidate {
 /** The candidates before and after this one in order of delivery. */
 export async function findNeighbours(
   db: Kysely<DB>,
-  campaignId: number,
+  { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
   id: number,
 ): Promise<{ previous: NamedCandidate | null; next: NamedCandidate | null }> {
-  const candidates = db.selectFrom('candidate').select(['id', 'name']).where('campaign_id', '=', campaignId).limit(1)
+  const candidates = db
+    .selectFrom('candidate')
+    .select(['id', 'name'])
+    .where('campaign_id', '=', campaignId)
+    .$if(!withCalibration, (query) => query.where('truth', 'is', null))
+    .limit(1)
   const previous = await candidates.where('id', '<', id).orderBy('id', 'desc').executeTakeFirst()
   const next = await candidates.where('id', '>', id).orderBy('id').executeTakeFirst()
   return { previous: previous ?? null, next: next ?? null }

@@ -182,15 +182,6 @@ function confirmed(db: Kysely<DB>, scope: CandidateScope) {
     .where('candidate.truth', 'is', null)
 }
 
-export async function countEntries(db: Kysely<DB>, scope: CandidateScope): Promise<{ all: number; revealed: number }> {
-  return confirmed(db, scope)
-    .select((e) => [
-      e.fn.countAll<number>().as('all'),
-      e.fn.countAll<number>().filterWhere(isRevealed(scope)).as('revealed'),
-    ])
-    .executeTakeFirstOrThrow()
-}
-
 /** In the order of their ids, from after `afterId`; only those whose verdict the reader may see. */
 export async function listEntriesAfter(
   db: Kysely<DB>,

@@ -8,9 +8,13 @@ export interface LookSums {
 
 /**
  * Standing looks at imaged candidates, none counted above `gradesWanted`, and looks wanted; a candidate that a ruling has
- * decided wants no more than it has. Without calibration candidates.
+ * decided wants no more than it has.
  */
-export async function sumLooks(db: Kysely<DB>, campaignId: number, gradesWanted: number): Promise<LookSums> {
+export async function sumLooks(
+  db: Kysely<DB>,
+  { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
+  gradesWanted: number,
+): Promise<LookSums> {
   const given = sql<number>`min(candidate.grades_given, ${gradesWanted})`
   return db
     .selectFrom('candidate')
@@ -22,7 +26,7 @@ export async function sumLooks(db: Kysely<DB>, campaignId: number, gradesWanted:
       ),
     ])
     .where('candidate.campaign_id', '=', campaignId)
-    .where('candidate.truth', 'is', null)
+    .$if(!withCalibration, (query) => query.where('candidate.truth', 'is', null))
     .where('candidate.imaged_at', 'is not', null)
     .executeTakeFirstOrThrow()
 }

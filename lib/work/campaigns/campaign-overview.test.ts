@@ -1,5 +1,6 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
+import { candidateTable } from '@/lib/work/catalogue/candidate-table'
 import { campaignOverview } from './campaign-overview'
 import { listCampaigns } from './list-campaigns'
 
@@ -70,7 +71,7 @@ it('wants no more looks at what a ruling has decided', async () => {
   expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 1 })
 })
 
-it('tells a grader no outcome, a viewer no upkeep, and leaves calibration stamps out of every count', async () => {
+it('tells a grader no outcome, a viewer no upkeep, and counts calibration stamps for nobody but graders', async () => {
   const { db, campaign, graders, reader, lead } = scenario
   const id = await addImagedCandidate(db, campaign, 'A')
   const hidden = await addImagedCandidate(db, campaign, 'Calibration')
@@ -80,6 +81,12 @@ it('tells a grader no outcome, a viewer no upkeep, and leaves calibration stamps
   const seen = await overviewOf(reader)
   expect(seen).toMatchObject({ mine: null, upkeep: null, candidates: 1 })
   expect(seen.outcome?.newestConfirmed).toEqual([{ id, name: 'A' }])
+  const forGrader = await overviewOf(graders[0])
+  expect(forGrader).toMatchObject({ candidates: 2, imaged: 2, grading: { given: 0, wanted: 6 } })
+  const table = { filter: {}, order: 'id', descending: false, page: 0, pageSize: 9 } as const
+  expect((await candidateTable(db, await scenario.permit(graders[0], 'read'), table)).all).toBe(forGrader.candidates)
+  expect((await listCampaigns(db, graders[0]))[0]).toMatchObject({ candidates: 2, imaged: 2, left: 2 })
+  expect((await listCampaigns(db, reader))[0]).toMatchObject({ candidates: 1, imaged: 1 })
   expect((await overviewOf(lead)).upkeep).toEqual({ graders: 5, openInvitations: 0, refusedFiles: 0, jobs: 0 })
 })
 

@@ -12,6 +12,7 @@ import type { RunSummary } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { candidateScope } from './candidate-scope'
 import { ruleInForce, type RuleInForce } from './rule-in-force'
 
 export interface CampaignOverview {
@@ -56,10 +57,18 @@ async function upkeepOf(db: Kysely<DB>, campaignId: number) {
 /** Where the campaign stands and what waits, as far as the person's role may know. */
 export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<CampaignOverview> {
   const { campaign, viewer, role } = permit
-  const [rule, counts] = await Promise.all([ruleInForce(db, campaign.id), countCandidates(db, campaign.id)])
+  // The same as the grader's table counts: by the difference they would know how many calibration stamps there are.
+  const counted = {
+    campaignId: campaign.id,
+    withCalibration: role === 'grader' && candidateScope(permit).withCalibration,
+  }
+  const [rule, counts] = await Promise.all([
+    ruleInForce(db, campaign.id),
+    countCandidates(db, campaign.id, counted.withCalibration),
+  ])
   const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted: rule.gradesWanted, now: isoTime() }
   const [grading, left, lookedAt, outcome, upkeep] = await Promise.all([
-    sumLooks(db, campaign.id, rule.gradesWanted),
+    sumLooks(db, counted, rule.gradesWanted),
     role === 'viewer' ? 0 : countOpenCandidates(db, asker),
     role === 'viewer' ? 0 : countGradedCandidates(db, campaign.id, viewer.id),
     role === 'grader' ? null : outcomeOf(db, campaign.id, counts),

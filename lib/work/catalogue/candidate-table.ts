@@ -13,7 +13,7 @@ import type { GradeLetter } from '@/db/schema/grading'
 import { noteShown } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
-import { candidateScope } from './candidate-scope'
+import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { asListed, saysJudgement, type ListedCandidate } from './list-candidates'
 
 export interface CandidateTableRow extends ListedCandidate {

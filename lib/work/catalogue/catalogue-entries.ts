@@ -7,7 +7,7 @@ import type { StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { GRADE_POINTS, gradesAmong, meanAndSpread } from '@/lib/science/agreement/grades'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import { candidateScope } from './candidate-scope'
+import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { gradeClass, type GradeClass } from './grade-class'
 
 /** A confirmed candidate as the catalogue says it. */

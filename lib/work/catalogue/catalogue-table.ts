@@ -1,10 +1,8 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { countEntries } from '@/db/queries/catalogue'
 import type { DB } from '@/db/schema'
 import { noteShown } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import { candidateScope } from './candidate-scope'
 import { thumbnailsOf } from './candidate-table'
 import { catalogueEntries, type CatalogueEntry } from './catalogue-entries'
 import { mayExport } from './export-catalogue'
@@ -16,14 +14,16 @@ export interface CatalogueTableRow extends Omit<CatalogueEntry, 'remarks' | 'rea
 
 export interface CatalogueTable {
   rows: CatalogueTableRow[]
-  /** Confirmed candidates that this person has not judged yet and so does not see: how many, not which. */
-  heldBack: number
+  /**
+   * For graders: only what they have judged themselves is here, whatever else there is. How much else, or whether anything, is not
+   * told: with one candidate left to grade the number would be its verdict.
+   */
+  ownOnly: boolean
   mayExport: boolean
 }
 
 /** The whole catalogue for its table, as far as this person may see it. */
 export async function catalogueTable(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<CatalogueTable> {
-  const { all, revealed } = await countEntries(db, candidateScope(permit))
   const rows: CatalogueTableRow[] = []
   for await (const entries of catalogueEntries(db, permit)) {
     const ids = entries.map((entry) => entry.id)
@@ -33,5 +33,5 @@ export async function catalogueTable(db: Kysely<DB>, permit: CampaignPermit<'rea
       rows.push({ ...entry, tags: tags.map(({ tag }) => tag).join(', '), thumbnail: thumbnails.get(entry.id) ?? null })
     }
   }
-  return { rows, heldBack: all - revealed, mayExport: mayExport(permit) }
+  return { rows, ownOnly: permit.role === 'grader', mayExport: mayExport(permit) }
 }

@@ -6,7 +6,7 @@ import type { CandidateState } from '@/db/schema/intake'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { readCursor, writeCursor } from './candidate-cursor'
-import { candidateScope } from './candidate-scope'
+import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 
 export interface ListedVerdict {
   outcome: CandidateState

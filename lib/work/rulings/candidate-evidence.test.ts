@@ -4,6 +4,7 @@ import { giveGrade } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
 import { candidateEvidence } from './candidate-evidence'
+import { neighboursOf } from './find-neighbours'
 import { listSplitCases } from './list-splits'
 import { ruleOnCandidate } from './rule-on-candidate'
 
@@ -61,16 +62,40 @@ describe('the evidence of a candidate', () => {
   })
 
   it('never carries the truth of a calibration candidate; that it is one is told to leads only', async () => {
-    const { db, campaign, graders, reader, permit, leadReads } = await gradedCase()
+    const { db, campaign, graders, permit, leadReads } = await gradedCase()
     const known = await addImagedCandidate(db, campaign, 'known')
     await db.updateTable('candidate').set({ truth: 'not a lens' }).where('id', '=', known).execute()
     await giveGrade(db, campaign, known, graders[0], 'A')
-    const readers = [await permit(reader, 'read'), await permit(graders[0], 'read')]
-    for (const reads of [leadReads, ...readers]) {
+    for (const reads of [leadReads, await permit(graders[0], 'read')]) {
       const evidence = await candidateEvidence(db, reads, known)
       expect(JSON.stringify(evidence)).not.toContain('not a lens')
       expect(evidence.judgement?.calibration).toBe(reads === leadReads)
     }
+  })
+
+  it('of a calibration candidate is not there for a viewer, neither by its number nor by turning pages', async () => {
+    const { db, campaign, reader, permit, leadReads, id } = await gradedCase()
+    const known = await addImagedCandidate(db, campaign, 'known')
+    const after = await addImagedCandidate(db, campaign, 'after')
+    await db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', known).execute()
+    const reads = await permit(reader, 'read')
+    await expect(candidateEvidence(db, reads, known)).rejects.toMatchObject({ status: 404 })
+    expect((await neighboursOf(db, reads, id)).next).toEqual({ id: after, name: 'after' })
+    expect((await neighboursOf(db, reads, after)).previous?.id).toBe(id)
+    expect((await neighboursOf(db, leadReads, id)).next).toEqual({ id: known, name: 'known' })
+  })
+
+  it('keeps redshifts, which tell that somebody took it for a lens, until the grader has judged', async () => {
+    const { db, graders, permit, id } = await gradedCase()
+    await db
+      .updateTable('candidate')
+      .set({ lens_redshift: 0.512, source_redshift: 2.345 })
+      .where('id', '=', id)
+      .execute()
+    const blind = await candidateEvidence(db, await permit(graders[4], 'read'), id)
+    expect(JSON.stringify(blind)).not.toMatch(/0\.512|2\.345/)
+    const { judgement } = await candidateEvidence(db, await permit(graders[0], 'read'), id)
+    expect(judgement).toMatchObject({ lensRedshift: 0.512, sourceRedshift: 2.345 })
   })
 
   it('is not found in another campaign', async () => {

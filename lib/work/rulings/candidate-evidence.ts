@@ -10,6 +10,7 @@ import type { Candidate, CandidateState, StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { notFound } from '@/lib/platform/problems/problem'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
+import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
@@ -24,8 +25,6 @@ export interface CandidateEvidence {
   raDeg: number | null
   decDeg: number | null
   pixelScaleArcsec: number | null
-  lensRedshift: number | null
-  sourceRedshift: number | null
   files: { name: string; bands: string[] }[]
   pictures: CandidatePictures
   /** null: withheld from a grader who has not graded this candidate yet. */
@@ -42,6 +41,9 @@ export interface Judgement {
   calibration: boolean
   /** of the machine search */
   score: number | null
+  /** They say that somebody took it for a lens, and the source's that there is one. */
+  lensRedshift: number | null
+  sourceRedshift: number | null
   votes: Record<GradeLetter, number>
   /** The answers that count: the newest standing one of each person, surest first. */
   grades: EvidenceGrade[]
@@ -105,7 +107,7 @@ export interface EvidenceStateChange {
 
 /**
  * Leads read names, everybody else pseudonyms; a grader who has not judged the candidate gets no judgement at all.
- * @throws Problem 404 where the campaign has no such candidate.
+ * @throws Problem 404 where the campaign has no such candidate; for a viewer a calibration candidate is none.
  */
 export async function candidateEvidence(
   db: Kysely<DB>,
@@ -113,7 +115,8 @@ export async function candidateEvidence(
   candidateId: number,
 ): Promise<CandidateEvidence> {
   const candidate = await findCandidate(db, permit.campaign.id, candidateId)
-  if (!candidate) throw notFound('candidate')
+  const hidden = !candidateScope(permit).withCalibration && candidate?.truth != null
+  if (!candidate || hidden) throw notFound('candidate')
   const pictures = (await picturesOf(db, permit.campaign, [candidateId])).get(candidateId)
   const revealed = (await revealedTo(db, permit, [candidateId])).has(candidateId)
   if (revealed) await noteShown(db, permit, [candidateId])
@@ -123,8 +126,6 @@ export async function candidateEvidence(
     raDeg: candidate.ra_deg,
     decDeg: candidate.dec_deg,
     pixelScaleArcsec: candidate.pixel_scale_arcsec,
-    lensRedshift: candidate.lens_redshift,
-    sourceRedshift: candidate.source_redshift,
     files: await listFilesOf(db, candidateId),
     pictures: pictures ?? {
       views: [],
@@ -170,6 +171,8 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     stateReason: cause && causeId !== null ? causeInWords(cause, causeId) : 'Open: nothing has decided it yet.',
     calibration: named && candidate.truth !== null,
     score: candidate.score,
+    lensRedshift: candidate.lens_redshift,
+    sourceRedshift: candidate.source_redshift,
     votes: countLetters(answers),
     grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id)).sort(surestFirst),
     verdict: verdicts.at(-1) ?? null,
