@@ -51,6 +51,24 @@ export async function withdrawInvitations(
   return Number(result.numUpdatedRows)
 }
 
+/** Takes back what this person has invited to this campaign and nobody has accepted. */
+export async function withdrawInvitationsBy(
+  db: Kysely<DB>,
+  campaignId: number,
+  invitedBy: number,
+  now: string,
+): Promise<number> {
+  const result = await db
+    .updateTable('invitation')
+    .set({ withdrawn_at: now })
+    .where('campaign_id', '=', campaignId)
+    .where('invited_by', '=', invitedBy)
+    .where('accepted_at', 'is', null)
+    .where('withdrawn_at', 'is', null)
+    .executeTakeFirst()
+  return Number(result.numUpdatedRows)
+}
+
 export interface OpenInvitation {
   id: number
   email: string

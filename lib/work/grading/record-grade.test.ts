@@ -173,3 +173,16 @@ describe('a grade is refused', () => {
     expect(await refusal(give(1, { grade: 'A' }))).toEqual({ status: 409, type: 'candidate-full' })
   })
 })
+
+describe('under a live lease, when a rule lowers the wanted number', () => {
+  it('a grade is taken where the lease has the last place, although others hold the candidate too', async () => {
+    const { db, campaign, lead, graders } = scenario
+    for (const grader of graders.slice(0, 2)) await lendNext(db, await scenario.permit(grader, 'grade'), 1)
+    const rule = { gradesWanted: 1, leastGrades: 1, parameters: { confirmMean: 2, setAsideMean: 1, splitSpread: 1 } }
+    await insertRule(db, { campaignId: campaign.id, version: 2, ...rule, createdBy: lead.id, now: '2026-03-01' })
+    expect((await give(0, { grade: 'A' })).grade.grade).toBe('A')
+    expect(await refusal(give(1, { grade: 'B' }))).toEqual({ status: 409, type: 'candidate-full' })
+    expect(await refusal(give(2, { grade: 'B' }))).toEqual({ status: 409, type: 'candidate-full' })
+    expect(await given()).toBe(1)
+  })
+})

@@ -1,6 +1,9 @@
-import { afterEach, beforeEach, expect, it } from 'vitest'
-import { makeScenario, type Scenario } from '@/tests/_support/scenario'
+import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { lendNext } from '@/lib/work/queue/lend-next'
+import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
+import { acceptAsNewPerson, readInvitation } from './accept-invitation'
 import { changeRole, endMembership } from './change-membership'
+import { InviteInput, invitePeople } from './invite-people'
 
 let scenario: Scenario
 beforeEach(async () => {
@@ -47,5 +50,52 @@ it('reaches nobody outside the campaign, and nobody whose membership has ended',
   await endMembership(db, await lead(), graders[0].id)
   await expect(changeRole(db, await lead(), { personId: graders[0].id, role: 'lead' })).rejects.toMatchObject({
     status: 404,
+  })
+})
+
+describe('with the rights of a person end', () => {
+  /** dunlin leads, has invited ruff, and holds a candidate; avocet has invited knot. */
+  async function leaving() {
+    const { db, campaign, graders, permit } = scenario
+    const [, dunlin] = graders
+    await addImagedCandidate(db, campaign, 'SWS-1')
+    await changeRole(db, await lead(), { personId: dunlin.id, role: 'lead' })
+    const invite = (emails: string) => InviteInput.parse({ emails, role: 'grader' })
+    await invitePeople(db, await permit(dunlin, 'lead'), invite('ruff@saltmarsh.test'))
+    await invitePeople(db, await lead(), invite('knot@saltmarsh.test'))
+    await lendNext(db, await permit(dunlin, 'grade'), 1)
+    const mails = await db.selectFrom('mail').select('body').orderBy('id').execute()
+    const tokens = mails.map(({ body }) => /invitation\/([\w-]+)/.exec(body)?.[1] ?? '')
+    return { dunlin, token: tokens[0], other: tokens[1] }
+  }
+  const leases = async () => (await scenario.db.selectFrom('lease').selectAll().execute()).length
+
+  it('the invitations that they sent and their leases, and nobody else’s, when the membership ends', async () => {
+    const { dunlin, token, other } = await leaving()
+    await endMembership(scenario.db, await lead(), dunlin.id)
+    expect(await readInvitation(scenario.db, token)).toEqual({ kind: 'withdrawn' })
+    expect(await readInvitation(scenario.db, other)).toMatchObject({ kind: 'open' })
+    expect(await leases()).toBe(0)
+  })
+
+  it('the invitations when a lead becomes a grader, who keeps what is on the bench', async () => {
+    const { dunlin, token } = await leaving()
+    await changeRole(scenario.db, await lead(), { personId: dunlin.id, role: 'grader' })
+    const accept = acceptAsNewPerson(scenario.db, token, { name: 'ruff', password: 'waders feed at dusk' })
+    await expect(accept).rejects.toMatchObject({ type: 'invitation-withdrawn' })
+    expect(await leases()).toBe(1)
+    await changeRole(scenario.db, await lead(), { personId: dunlin.id, role: 'viewer' })
+    expect(await leases()).toBe(0)
+  })
+
+  it('nothing while a change is refused', async () => {
+    const { token } = await leaving()
+    const { db, graders, permit } = scenario
+    await expect(permit(graders[0], 'lead')).rejects.toMatchObject({ status: 403 })
+    await endMembership(db, await permit(graders[1], 'lead'), scenario.lead.id)
+    const last = endMembership(db, await permit(graders[1], 'lead'), graders[1].id)
+    await expect(last).rejects.toMatchObject({ type: 'last-lead' })
+    expect(await readInvitation(db, token)).toMatchObject({ kind: 'open' })
+    expect(await leases()).toBe(1)
   })
 })

@@ -1,12 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { withdrawInvitationsBy } from '@/db/queries/invitations'
 import { countLeads, findMembership, setMembership } from '@/db/queries/people'
+import { deleteLeases } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { Role } from '@/db/schema/people'
 import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
-import type { CampaignPermit } from './permission'
+import { roleMay, type CampaignPermit } from './permission'
 
 async function requireMember(db: Kysely<DB>, permit: CampaignPermit<'lead'>, personId: number) {
   const membership = await findMembership(db, permit.campaign.id, personId)
@@ -20,6 +22,18 @@ async function assertLeadRemains(db: Kysely<DB>, campaignId: number, name: strin
   throw conflict('last-lead', `${name} is the only lead of this campaign. Make somebody else a lead first.`)
 }
 
+/** What a person could do in the campaign ends with their rights: the links they sent, and the candidates on their bench. */
+async function endRights(
+  db: Kysely<DB>,
+  campaignId: number,
+  personId: number,
+  ended: { lead: boolean; grade: boolean },
+): Promise<{ invitationsWithdrawn?: number }> {
+  if (ended.grade) await deleteLeases(db, campaignId, personId, null)
+  const withdrawn = ended.lead ? await withdrawInvitationsBy(db, campaignId, personId, isoTime()) : 0
+  return withdrawn > 0 ? { invitationsWithdrawn: withdrawn } : {}
+}
+
 export async function changeRole(
   db: Kysely<DB>,
   permit: CampaignPermit<'lead'>,
@@ -31,12 +45,14 @@ export async function changeRole(
     if (before === input.role) return { name }
     if (before === 'lead') await assertLeadRemains(transaction, campaign.id, name)
     await setMembership(transaction, campaign.id, input.personId, { role: input.role })
+    const ended = { lead: before === 'lead', grade: !roleMay(input.role, 'grade') }
+    const rights = await endRights(transaction, campaign.id, input.personId, ended)
     await recordEvent(transaction, {
       personId: viewer.id,
       campaignId: campaign.id,
       action: 'people.role-changed',
       subject: String(input.personId),
-      detail: { from: before, to: input.role },
+      detail: { from: before, to: input.role, ...rights },
     })
     return { name }
   })
@@ -53,11 +69,13 @@ export async function endMembership(
     const { name, role } = await requireMember(transaction, permit, personId)
     if (role === 'lead') await assertLeadRemains(transaction, campaign.id, name)
     await setMembership(transaction, campaign.id, personId, { ended_at: isoTime() })
+    const detail = await endRights(transaction, campaign.id, personId, { lead: true, grade: true })
     await recordEvent(transaction, {
       personId: viewer.id,
       campaignId: campaign.id,
       action: 'people.membership-ended',
       subject: String(personId),
+      detail,
     })
     return { name }
   })

@@ -6,6 +6,8 @@ import { acceptAsNewPerson, acceptAsViewer, NewPersonInput, readInvitation } fro
 import { endMembership } from './change-membership'
 import { InviteInput, invitePeople, sendInvitationAgain, withdrawInvitation } from './invite-people'
 import { listPeople } from './list-people'
+import { retryMail } from './outbox'
+import { permitSite } from './permission'
 import { findPersonBySecret } from './sign-in'
 
 const PASSWORD = 'waders feed at dusk'
@@ -216,4 +218,39 @@ describe('open invitations', () => {
     await expect(sendInvitationAgain(scenario.db, other, id)).rejects.toMatchObject({ status: 404 })
     expect(await readInvitation(scenario.db, token)).toMatchObject({ kind: 'open' })
   })
+})
+
+it('lets one of two win that accept one link at the same moment, and makes one account', async () => {
+  const token = await invite('knot@saltmarsh.test')
+  const results = await Promise.allSettled([
+    acceptAsNewPerson(scenario.db, token, newPerson('knot')),
+    acceptAsNewPerson(scenario.db, token, newPerson('other')),
+  ])
+  expect(results.map(({ status }) => status).toSorted()).toEqual(['fulfilled', 'rejected'])
+  const lost = results.find((result) => result.status === 'rejected')
+  expect(lost?.reason).toMatchObject({ type: 'invitation-used' })
+  const joined = await scenario.db
+    .selectFrom('audit_event')
+    .select('id')
+    .where('action', '=', 'people.joined')
+    .execute()
+  expect(joined).toHaveLength(1)
+})
+
+it('tries a waiting mail again, once however often it is asked, and refuses one that has settled or is not there', async () => {
+  const { db } = scenario
+  const site = permitSite(scenario.lead)
+  await invite('knot@saltmarsh.test')
+  const { id } = await db.selectFrom('mail').select('id').executeTakeFirstOrThrow()
+  await db.deleteFrom('job').execute()
+  await retryMail(db, site, id)
+  await retryMail(db, site, id)
+  const jobs = await db.selectFrom('job').select(['kind', 'payload', 'state']).execute()
+  expect(jobs).toEqual([{ kind: 'send-mail', payload: JSON.stringify({ mailId: id }), state: 'queued' }])
+  await db.deleteFrom('job').execute()
+  await deliverMail(db, id, { smtpUrl: undefined, mailFrom: 'ringside@saltmarsh.test' })
+  await expect(retryMail(db, site, id)).rejects.toMatchObject({ status: 409, type: 'mail-settled' })
+  await expect(retryMail(db, site, 999)).rejects.toMatchObject({ status: 404 })
+  expect(() => permitSite(scenario.graders[0])).toThrow(expect.objectContaining({ status: 403 }))
+  expect(await db.selectFrom('job').selectAll().execute()).toEqual([])
 })
