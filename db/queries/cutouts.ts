@@ -133,15 +133,20 @@ export interface CandidateFacts {
   imagedAt: string | null
 }
 
-/** Adds candidates, or gives those of the same name these facts; a fact that is null leaves what is there. Ids by name. */
+/**
+ * Adds candidates, or gives those of the same name these facts. A fact that is null leaves what is there, or with 'withdraw'
+ * takes it away. Ids by name.
+ */
 export async function upsertCandidates(
   db: Kysely<DB>,
   campaignId: number,
   candidates: readonly CandidateFacts[],
   now: string,
+  nothing: 'keep' | 'withdraw' = 'keep',
 ): Promise<Map<string, number>> {
   if (candidates.length === 0) return new Map()
   const kept = (column: string) => sql<never>`coalesce(excluded.${sql.ref(column)}, candidate.${sql.ref(column)})`
+  const fact = (column: string) => (nothing === 'keep' ? kept(column) : sql<never>`excluded.${sql.ref(column)}`)
   const rows = await db
     .insertInto('candidate')
     .values(
@@ -166,12 +171,12 @@ export async function upsertCandidates(
     )
     .onConflict((conflict) =>
       conflict.columns(['campaign_id', 'name']).doUpdateSet({
-        ra_deg: kept('ra_deg'),
-        dec_deg: kept('dec_deg'),
-        pixel_scale_arcsec: kept('pixel_scale_arcsec'),
-        score: kept('score'),
-        lens_redshift: kept('lens_redshift'),
-        source_redshift: kept('source_redshift'),
+        ra_deg: fact('ra_deg'),
+        dec_deg: fact('dec_deg'),
+        pixel_scale_arcsec: fact('pixel_scale_arcsec'),
+        score: fact('score'),
+        lens_redshift: fact('lens_redshift'),
+        source_redshift: fact('source_redshift'),
         imaged_at: kept('imaged_at'),
       }),
     )

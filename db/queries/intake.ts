@@ -1,49 +1,7 @@
 import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
-import type { Batch, FileFate, FileRow } from '../schema/intake'
+import type { FileFate, FileRow } from '../schema/intake'
 import { inForce, isToBeRead } from './in-force'
-
-export async function findNewestBatch(
-  db: Kysely<DB>,
-  campaignId: number,
-  personId: number,
-  since: string,
-): Promise<Batch | null> {
-  const row = await db
-    .selectFrom('batch')
-    .selectAll()
-    .where('campaign_id', '=', campaignId)
-    .where('created_by', '=', personId)
-    .where('created_at', '>=', since)
-    .orderBy('id', 'desc')
-    .limit(1)
-    .executeTakeFirst()
-  return row ?? null
-}
-
-export async function findBatchByName(db: Kysely<DB>, campaignId: number, name: string): Promise<Batch | null> {
-  const row = await db
-    .selectFrom('batch')
-    .selectAll()
-    .where('campaign_id', '=', campaignId)
-    .where('name', '=', name)
-    .orderBy('id', 'desc')
-    .limit(1)
-    .executeTakeFirst()
-  return row ?? null
-}
-
-export async function insertBatch(
-  db: Kysely<DB>,
-  batch: { campaignId: number; name: string; personId: number; now: string },
-): Promise<number> {
-  const row = await db
-    .insertInto('batch')
-    .values({ campaign_id: batch.campaignId, name: batch.name, created_by: batch.personId, created_at: batch.now })
-    .returning('id')
-    .executeTakeFirstOrThrow()
-  return row.id
-}
 
 export async function findFileByContent(
   db: Kysely<DB>,

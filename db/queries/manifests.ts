@@ -43,6 +43,48 @@ function manifestRows(db: Kysely<DB>, campaignId: number, reading: number | null
     .where(manifestInForce(reading))
 }
 
+export interface ToldPlane {
+  candidate: string
+  raDeg: number | null
+  decDeg: number | null
+  designation: string | null
+  band: string
+  fileName: string
+  width: number
+  height: number
+  wcs: string | null
+  pixelScaleArcsec: number | null
+}
+
+/** The planes of candidates, with where these are and what they are called. */
+export async function listToldPlanes(
+  db: Kysely<DB>,
+  campaignId: number,
+  names: readonly string[],
+): Promise<ToldPlane[]> {
+  if (names.length === 0) return []
+  return db
+    .selectFrom('candidate')
+    .innerJoin('plane', 'plane.candidate_id', 'candidate.id')
+    .innerJoin('file', 'file.id', 'plane.file_id')
+    .leftJoin('designation', 'designation.candidate_id', 'candidate.id')
+    .select([
+      'candidate.name as candidate',
+      'candidate.ra_deg as raDeg',
+      'candidate.dec_deg as decDeg',
+      'designation.designation',
+      'plane.band',
+      'file.name as fileName',
+      'plane.width',
+      'plane.height',
+      'plane.wcs',
+      'plane.pixel_scale_arcsec as pixelScaleArcsec',
+    ])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.name', 'in', names)
+    .execute()
+}
+
 export async function hasManifestRows(db: Kysely<DB>, campaignId: number): Promise<boolean> {
   const row = await db
     .selectFrom('manifest_row')

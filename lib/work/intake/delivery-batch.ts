@@ -1,7 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { z } from 'zod'
-import { findBatchByName, findNewestBatch, insertBatch } from '@/db/queries/intake'
+import { findBatchByName, findNewestBatch, insertBatch } from '@/db/queries/batches'
 import type { DB } from '@/db/schema'
 import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'

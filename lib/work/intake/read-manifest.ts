@@ -1,24 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listCandidateNames, listFilesOfCandidates, upsertCandidates } from '@/db/queries/cutouts'
 import { replaceFileProblems, type NewFileProblem } from '@/db/queries/file-problems'
 import { setFileFates, type WaitingFile } from '@/db/queries/intake'
-import {
-  deleteManifestRows,
-  insertManifestRows,
-  listManifestRows,
-  listManifestRowsOfBases,
-  listManifestRowsOfCandidates,
-} from '@/db/queries/manifests'
+import { deleteManifestRows, insertManifestRows } from '@/db/queries/manifests'
 import type { DB } from '@/db/schema'
 import type { ManifestRow } from '@/db/schema/intake'
 import { isoTime } from '@/lib/platform/clock'
-import { baseName } from './file-name'
-import { groupBy } from './group-by'
-import { manifestFacts } from './manifest-facts'
-import { rowsOfFile } from './match-name'
 import { moveNamedFiles } from './move-named-files'
 import type { ManifestEntry, ParsedManifest } from './parse-manifest'
+import { retellFacts } from './retell-facts'
 import { tryUnmatchedAgain } from './try-again'
 
 const ROWS_PER_STATEMENT = 500
@@ -52,10 +42,7 @@ export async function keepManifest(
       part.map((entry) => rowOf(entry, campaignId, file.id)),
     )
   }
-  await updateNamedCandidates(db, campaignId, file.id)
-  if (entries.some(({ candidate, fileName }) => candidate === null && fileName !== null)) {
-    await updateCandidatesOfFiles(db, campaignId)
-  }
+  problems.push(...(await retellFacts(db, campaignId, file.id)))
   if (entries.some(({ candidate, fileName }) => candidate !== null && fileName !== null)) {
     problems.push(...(await moveNamedFiles(db, campaignId, file.id)))
   }
@@ -104,42 +91,4 @@ function rowOf(entry: ManifestEntry, campaignId: number, fileId: number): Omit<M
     lens_redshift: entry.lensRedshift,
     source_redshift: entry.sourceRedshift,
   }
-}
-
-async function updateNamedCandidates(db: Kysely<DB>, campaignId: number, fileId: number): Promise<void> {
-  for (let afterId = 0; ;) {
-    const rows = await listManifestRows(db, fileId, afterId, ROWS_PER_STATEMENT)
-    const last = rows.at(-1)
-    if (!last) return
-    afterId = last.id
-    const names = [...new Set(rows.flatMap(({ candidate }) => candidate ?? []))]
-    const known = await listCandidateNames(db, campaignId, names)
-    const told = groupBy(await listManifestRowsOfCandidates(db, campaignId, known), ({ candidate }) => candidate ?? '')
-    await giveFacts(db, campaignId, told)
-  }
-}
-
-/** For lines that name a file and no candidate. */
-async function updateCandidatesOfFiles(db: Kysely<DB>, campaignId: number): Promise<void> {
-  for (let afterId = 0; ;) {
-    const files = await listFilesOfCandidates(db, campaignId, afterId, ROWS_PER_STATEMENT)
-    const last = files.at(-1)
-    if (!last) return
-    afterId = last.id
-    const bases = [...new Set(files.map(({ name }) => baseName(name)))]
-    const byBase = groupBy(await listManifestRowsOfBases(db, campaignId, bases), (row) =>
-      (row.file_base ?? '').toLowerCase(),
-    )
-    const told = new Map<string, ManifestRow[]>()
-    for (const { name, candidate } of files) {
-      const rows = rowsOfFile(name, byBase.get(baseName(name).toLowerCase()) ?? [])
-      if (rows.length > 0) told.set(candidate, [...(told.get(candidate) ?? []), ...rows])
-    }
-    await giveFacts(db, campaignId, told)
-  }
-}
-
-async function giveFacts(db: Kysely<DB>, campaignId: number, told: Map<string, ManifestRow[]>): Promise<void> {
-  const facts = [...told].map(([name, rows]) => ({ name, ...manifestFacts(rows), imagedAt: null }))
-  await upsertCandidates(db, campaignId, facts, isoTime())
 }

@@ -4,8 +4,9 @@ import { FitsError, type FitsFile, type FitsImage } from '@/lib/science/fits/fit
 import { readFits } from '@/lib/science/fits/read-fits'
 import type { BandPlane } from '@/lib/science/imaging/normalise-planes'
 import { estimateNoise } from '@/lib/science/imaging/statistics'
+import { imageCentre } from '@/lib/science/sky/image-centre'
 import type { SkyPosition } from '@/lib/science/sky/separation'
-import { pixelScaleArcsec, pixelToSky, readWcs, WcsError, type Wcs } from '@/lib/science/sky/wcs'
+import { pixelScaleArcsec, readWcs, WcsError, type Wcs } from '@/lib/science/sky/wcs'
 import { bandsOfFile, type BandPlace } from '@/lib/work/intake/bands-of-file'
 import { LOST, type Refusal } from '@/lib/work/intake/refusals'
 import { planeOrientation } from './candidate-geometry'
@@ -68,7 +69,7 @@ function cutoutOf(fileId: number, { band, image, planeIndex }: BandPlace, fits: 
       noise: sigma,
     },
     data,
-    centre: wcs === null ? null : centreOf(wcs, width, height),
+    centre: wcs === null ? null : imageCentre(wcs, width, height),
     wcsFault: fault,
   }
 }
@@ -82,13 +83,6 @@ function wcsOf(image: FitsImage, fits: FitsFile): { wcs: Wcs | null; fault: stri
     if (error instanceof WcsError) return { wcs: null, fault: error.message }
     throw error
   }
-}
-
-/** Centre of the image: pixels count from 0, so the middle of n pixels is at (n - 1) / 2. */
-function centreOf(wcs: Wcs, width: number, height: number): SkyPosition | null {
-  const { raDeg, decDeg } = pixelToSky(wcs, (width - 1) / 2, (height - 1) / 2)
-  if (!Number.isFinite(raDeg) || !Number.isFinite(decDeg)) return null
-  return { raDeg: ((raDeg % 360) + 360) % 360, decDeg }
 }
 
 /** As pictures are made of it, the stored ones and those drawn live. */
