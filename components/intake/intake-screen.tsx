@@ -100,7 +100,7 @@ export function IntakeScreen({
           onDrop={() => setInHand(null)}
         />
       ) : null}
-      <div className="grid items-start gap-6 lg:grid-cols-[minmax(0,1fr)_minmax(0,1fr)]">
+      <div className={`grid items-start gap-6 ${inHand ? '' : 'lg:grid-cols-[minmax(0,1fr)_minmax(0,1fr)]'}`}>
         <div className="flex flex-col gap-5">
           {inHand ? null : (
             <div className="flex flex-col gap-3">

@@ -109,7 +109,7 @@ export function MatchStep({
       className="flex flex-col gap-4 rounded-tray border border-line px-5 py-5"
     >
       <div className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1">
-        <h2 className="text-title font-semibold" role="status">
+        <h2 className="text-title font-semibold" aria-live="polite">
           {done
             ? `${counted(files.length, 'file')} for ${counted(done.preview.candidates, 'candidate')}${problems > 0 ? `, ${counted(problems, 'problem')}` : ', no problem seen'}`
             : `Matching ${counted(files.length, 'file')}…`}

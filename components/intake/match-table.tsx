@@ -65,7 +65,8 @@ function MatchRow({ row, index, top }: { row: PreviewRow; index: number; top: nu
       style={{ height: ROW_PX, transform: `translateY(${top}px)` }}
     >
       <span role="cell" className="figures min-w-0 truncate" title={name}>
-        {name}
+        <span className="hidden md:inline">{name}</span>
+        <span className="md:hidden">{name.slice(name.lastIndexOf('/') + 1)}</span>
         {said ? (
           <span className={`block truncate text-note md:hidden ${problem ? 'text-alarm' : 'text-mute'}`}>{said}</span>
         ) : null}

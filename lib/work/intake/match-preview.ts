@@ -57,6 +57,10 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
     rowsOfLines.filter(({ file_base }) => file_base !== null),
     (row) => (row.file_base ?? '').toLowerCase(),
   )
+  const byCandidate = groupBy(
+    rowsOfLines.filter((row) => row.candidate !== null),
+    (row) => row.candidate ?? '',
+  )
   const used = new Set<number>()
   const holders = new Map<string, string>()
   const rows: PreviewRow[] = []
@@ -90,7 +94,9 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
     const told = match.rows.length === 0 ? (here?.told[index] ?? null) : null
     row.candidate = told?.candidate ?? match.candidate
     row.band = told?.band ?? match.band
-    const facts = manifestFacts(match.rows)
+    const ofCandidate = byCandidate.get(row.candidate ?? '') ?? []
+    for (const line of ofCandidate) if (line.file_base === null) used.add(line.id)
+    const facts = manifestFacts([...match.rows, ...ofCandidate])
     row.raDeg = facts.raDeg ?? told?.raDeg ?? null
     row.decDeg = facts.decDeg ?? told?.decDeg ?? null
     row.problem ??= match.refusal?.reason ?? null
