@@ -2,10 +2,12 @@ import type { Migration } from 'kysely'
 import * as mainPath from './001-main-path'
 import * as archivesAndBatches from './002-archives-and-batches'
 import * as judgementShown from './004-judgement-shown'
+import * as invitationMail from './005-invitation-mail'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
   '001-main-path': mainPath,
   '002-archives-and-batches': archivesAndBatches,
   '004-judgement-shown': judgementShown,
+  '005-invitation-mail': invitationMail,
 }

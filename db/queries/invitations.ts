@@ -127,3 +127,24 @@ export async function setInvitationWithdrawn(db: Kysely<DB>, id: number, now: st
 export async function setInvitationAccepted(db: Kysely<DB>, id: number, personId: number, now: string): Promise<void> {
   await db.updateTable('invitation').set({ accepted_at: now, accepted_by: personId }).where('id', '=', id).execute()
 }
+
+export async function setInvitationMail(db: Kysely<DB>, id: number, mailId: number): Promise<void> {
+  await db.updateTable('invitation').set({ mail_id: mailId }).where('id', '=', id).execute()
+}
+
+/** Mails still here with their text, whose invitation was used, withdrawn or has expired. */
+export async function listMailsOfDeadInvitations(db: Kysely<DB>, now: string): Promise<{ id: number; body: string }[]> {
+  return db
+    .selectFrom('invitation')
+    .innerJoin('mail', 'mail.id', 'invitation.mail_id')
+    .select(['mail.id', 'mail.body'])
+    .where('mail.state', '!=', 'sent')
+    .where((e) =>
+      e.or([
+        e('invitation.accepted_at', 'is not', null),
+        e('invitation.withdrawn_at', 'is not', null),
+        e('invitation.expires_at', '<=', now),
+      ]),
+    )
+    .execute()
+}

@@ -47,3 +47,7 @@ export async function listMails(db: Kysely<DB>, limit: number, before?: number):
   if (before !== undefined) query = query.where('id', '<', before)
   return query.execute()
 }
+
+export async function setMailBody(db: Kysely<DB>, id: number, body: string): Promise<void> {
+  await db.updateTable('mail').set({ body }).where('id', '=', id).execute()
+}

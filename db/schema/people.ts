@@ -28,5 +28,7 @@ export interface InvitationTable {
   accepted_at: IsoTime | null
   accepted_by: number | null
   withdrawn_at: IsoTime | null
+  /** The mail that carries the link. */
+  mail_id: Generated<number | null>
 }
 export type Invitation = Selectable<InvitationTable>

@@ -16,6 +16,7 @@ import type { Role } from '@/db/schema/people'
 import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import { conflict, forbidden, notFound, type Problem, signInNeeded } from '@/lib/platform/problems/problem'
+import { forgetDeadLinks } from './forget-links'
 import { hashPassword, Password } from './passwords'
 import { PersonName } from './person-input'
 import { nextPseudonym } from './pseudonyms'
@@ -83,6 +84,7 @@ async function join(transaction: Kysely<DB>, invitation: FoundInvitation, person
   const pseudonym = before?.pseudonym ?? nextPseudonym(await listPseudonyms(transaction, campaignId))
   await upsertMembership(transaction, { campaignId, personId, role, pseudonym, now })
   await setInvitationAccepted(transaction, invitation.id, personId, now)
+  await forgetDeadLinks(transaction)
   const subject = String(invitation.id)
   await recordEvent(transaction, {
     personId,

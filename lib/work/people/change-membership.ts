@@ -8,6 +8,7 @@ import type { Role } from '@/db/schema/people'
 import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { forgetDeadLinks } from './forget-links'
 import { roleMay, type CampaignPermit } from './permission'
 
 async function requireMember(db: Kysely<DB>, permit: CampaignPermit<'lead'>, personId: number) {
@@ -31,6 +32,7 @@ async function endRights(
 ): Promise<{ invitationsWithdrawn?: number }> {
   if (ended.grade) await deleteLeases(db, campaignId, personId, null)
   const withdrawn = ended.lead ? await withdrawInvitationsBy(db, campaignId, personId, isoTime()) : 0
+  if (withdrawn > 0) await forgetDeadLinks(db)
   return withdrawn > 0 ? { invitationsWithdrawn: withdrawn } : {}
 }
 

@@ -6,7 +6,7 @@ import { acceptAsNewPerson, acceptAsViewer, NewPersonInput, readInvitation } fro
 import { endMembership } from './change-membership'
 import { InviteInput, invitePeople, sendInvitationAgain, withdrawInvitation } from './invite-people'
 import { listPeople } from './list-people'
-import { retryMail } from './outbox'
+import { listOutbox, retryMail } from './outbox'
 import { permitSite } from './permission'
 import { findPersonBySecret } from './sign-in'
 
@@ -253,4 +253,43 @@ it('tries a waiting mail again, once however often it is asked, and refuses one 
   await expect(retryMail(db, site, 999)).rejects.toMatchObject({ status: 404 })
   expect(() => permitSite(scenario.graders[0])).toThrow(expect.objectContaining({ status: 403 }))
   expect(await db.selectFrom('job').selectAll().execute()).toEqual([])
+})
+
+describe('the link in a mail that stays on this site', () => {
+  const bodies = async () =>
+    (await scenario.db.selectFrom('mail').select('body').orderBy('id').execute()).map(({ body }) => body)
+  async function kept() {
+    const token = await invite('knot@saltmarsh.test')
+    const { id } = await scenario.db.selectFrom('mail').select('id').orderBy('id', 'desc').executeTakeFirstOrThrow()
+    await deliverMail(scenario.db, id, { smtpUrl: undefined, mailFrom: 'ringside@saltmarsh.test' })
+    expect((await bodies())[0]).toContain(token)
+    const { id: invitationId } = await scenario.db.selectFrom('invitation').select('id').executeTakeFirstOrThrow()
+    return { token, invitationId }
+  }
+
+  it('is forgotten when the invitation is used', async () => {
+    const { token } = await kept()
+    await acceptAsNewPerson(scenario.db, token, newPerson())
+    expect(await bodies()).toEqual([expect.stringContaining('/invitation/…')])
+    expect((await bodies())[0]).not.toContain(token)
+  })
+
+  it('is forgotten when the invitation is withdrawn or replaced, while the new link stays', async () => {
+    const { token, invitationId } = await kept()
+    await sendInvitationAgain(scenario.db, await lead(), invitationId)
+    const fresh = await newestToken()
+    expect((await bodies())[0]).not.toContain(token)
+    expect((await bodies())[1]).toContain(fresh)
+    const open = await scenario.db.selectFrom('invitation').select('id').orderBy('id', 'desc').executeTakeFirstOrThrow()
+    await withdrawInvitation(scenario.db, await lead(), open.id)
+    expect((await bodies())[1]).not.toContain(fresh)
+  })
+
+  it('is forgotten when the outbox is read after the invitation expired, and not before', async () => {
+    const { token } = await kept()
+    const site = permitSite(scenario.lead)
+    expect((await listOutbox(scenario.db, site)).mails[0].body).toContain(token)
+    vi.useFakeTimers({ toFake: ['Date'], now: Date.now() + 15 * 24 * 3600 * 1000 })
+    expect((await listOutbox(scenario.db, site)).mails[0].body).not.toContain(token)
+  })
 })

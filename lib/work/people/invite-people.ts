@@ -4,6 +4,7 @@ import { z } from 'zod'
 import {
   findCampaignInvitation,
   insertInvitation,
+  setInvitationMail,
   setInvitationWithdrawn,
   withdrawInvitations,
 } from '@/db/queries/invitations'
@@ -15,6 +16,7 @@ import { isoTime } from '@/lib/platform/clock'
 import { config } from '@/lib/platform/config/config'
 import { queueMail } from '@/lib/platform/mail/queue-mail'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { forgetDeadLinks } from './forget-links'
 import { INVITATION_DAYS, invitationMail } from './invitation-mail'
 import type { CampaignPermit } from './permission'
 import { hashSecret, newToken } from './secrets'
@@ -69,7 +71,9 @@ async function inviteOne(
   })
   const link = `${config().siteUrl}/invitation/${token}`
   const { name: campaignName, survey } = campaign
-  await queueMail(transaction, invitationMail({ email, role, campaignName, survey, invitedBy: viewer.name, link }))
+  const mail = invitationMail({ email, role, campaignName, survey, invitedBy: viewer.name, link })
+  await setInvitationMail(transaction, id, await queueMail(transaction, mail))
+  await forgetDeadLinks(transaction)
   await recordEvent(transaction, {
     personId: viewer.id,
     campaignId: campaign.id,
@@ -146,6 +150,7 @@ export async function withdrawInvitation(
   return db.transaction().execute(async (transaction) => {
     const { id, email } = await requireOpenInvitation(transaction, permit, invitationId)
     await setInvitationWithdrawn(transaction, id, isoTime())
+    await forgetDeadLinks(transaction)
     await recordEvent(transaction, {
       personId: permit.viewer.id,
       campaignId: permit.campaign.id,

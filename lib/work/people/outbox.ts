@@ -8,6 +8,7 @@ import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { mailLeavesSite } from '@/lib/platform/mail/queue-mail'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { forgetDeadLinks } from './forget-links'
 import type { SitePermit } from './permission'
 
 const PAGE_LENGTH = 50
@@ -23,6 +24,7 @@ export interface Outbox {
 
 /** Every message of the site, newest first. */
 export async function listOutbox(db: Kysely<DB>, _permit: SitePermit, before?: number): Promise<Outbox> {
+  await forgetDeadLinks(db)
   const found = await listMails(db, PAGE_LENGTH + 1, before)
   const mails = found.slice(0, PAGE_LENGTH)
   const nextBefore = found.length > PAGE_LENGTH ? mails[mails.length - 1].id : null

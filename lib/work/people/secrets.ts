@@ -1,7 +1,11 @@
 import 'server-only'
 import { createHash, randomBytes, timingSafeEqual } from 'node:crypto'
 
-/** 256 bits for a link. Only its hash is stored, so that a copy of the database opens nothing. */
+/**
+ * 256 bits for a link. Of it the hash is stored, and the link itself only in its mail, which forgets it on leaving the site; where
+ * there is no mail server, or it has not taken the mail yet, an administrator reads the link in the outbox until the invitation is
+ * used, withdrawn or expired. Until then a copy of the database opens what is open.
+ */
 export function newToken(): string {
   return randomBytes(32).toString('base64url')
 }
