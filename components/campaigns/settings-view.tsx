@@ -61,7 +61,7 @@ export function SettingsView({
       </FormSection>
       <FormSection
         title="File names"
-        about="How candidate and band are read from the names of files that arrive from now on. Files already matched stay so."
+        about="How candidate and band are read from file names. A change has files tried again that could not be matched; files already matched stay so."
       >
         <NamePatternForm value={campaign.namePattern} action={changeNamePattern} />
       </FormSection>
