@@ -3,6 +3,7 @@ import * as mainPath from './001-main-path'
 import * as archivesAndBatches from './002-archives-and-batches'
 import * as judgementShown from './004-judgement-shown'
 import * as invitationMail from './005-invitation-mail'
+import * as looksAsked from './006-looks-asked'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -10,4 +11,5 @@ export const migrations: Record<string, Migration> = {
   '002-archives-and-batches': archivesAndBatches,
   '004-judgement-shown': judgementShown,
   '005-invitation-mail': invitationMail,
+  '006-looks-asked': looksAsked,
 }

@@ -16,7 +16,7 @@ export const CONSEQUENCE: Record<RulingChoice, string> = {
   'confirmed-B': 'It enters the catalogue as B and stays, whatever the grades say, until you rule again.',
   'confirmed-C': 'It enters the catalogue as C and stays, whatever the grades say, until you rule again.',
   'set-aside': 'It is out, whatever the grades say, until you rule again.',
-  open: 'It is open for more looks and stays open until you rule again or let the verdict decide.',
+  open: 'It goes back to the bench, for one more look where it has all it wanted, and stays open until you rule again or let the verdict decide.',
   'by-verdict': 'Your ruling steps back: the newest verdict holds now, and later ones will.',
 }
 

@@ -49,6 +49,7 @@ export interface CandidateToGrade {
   id: number
   imaged_at: string | null
   grades_given: number
+  looks_asked: number
 }
 
 export async function findCandidateToGrade(
@@ -58,7 +59,7 @@ export async function findCandidateToGrade(
 ): Promise<CandidateToGrade | null> {
   const row = await db
     .selectFrom('candidate')
-    .select(['id', 'imaged_at', 'grades_given'])
+    .select(['id', 'imaged_at', 'grades_given', 'looks_asked'])
     .where('id', '=', candidateId)
     .where('campaign_id', '=', campaignId)
     .executeTakeFirst()

@@ -1,4 +1,4 @@
-import { sql, type Kysely } from 'kysely'
+import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 
 /** Whose queue it is, and how many grades a candidate of the campaign may have. */
@@ -11,16 +11,27 @@ export interface Asker {
 
 const DECIDING_RULINGS = ['confirmed', 'set aside'] as const
 
+/** Why a candidate still wants looks: the rule wants more, or a lead has asked for more than it wants. */
+type Wanted = 'by rule' | 'by lead' | 'either'
+
+/** The parts 'by rule' and 'by lead' share no candidate; each walks an index of its own, `candidate_queue` or `candidate_asked`. */
+const WANTED: Record<Wanted, (gradesWanted: number) => RawBuilder<SqlBool>> = {
+  'by rule': (wanted) => sql<SqlBool>`candidate.grades_given < ${wanted}`,
+  'by lead': (wanted) =>
+    sql<SqlBool>`candidate.looks_asked > candidate.grades_given and +candidate.grades_given >= ${wanted}`,
+  either: (wanted) => sql<SqlBool>`+candidate.grades_given < max(${wanted}, candidate.looks_asked)`,
+}
+
 /**
  * Candidates that this person may still be shown: imaged, short of the wanted number, not decided by a ruling that stands,
- * never graded by them. Walks the index `candidate_queue`.
+ * never graded by them.
  */
-function openTo(db: Kysely<DB>, { campaignId, personId, gradesWanted }: Asker) {
+function openTo(db: Kysely<DB>, { campaignId, personId, gradesWanted }: Asker, wanted: Wanted) {
   return db
     .selectFrom('candidate')
     .where('candidate.campaign_id', '=', campaignId)
     .where('candidate.imaged_at', 'is not', null)
-    .where('candidate.grades_given', '<', gradesWanted)
+    .where(WANTED[wanted](gradesWanted))
     .where((e) =>
       e.or([
         e('candidate.ruling_id', 'is', null),
@@ -53,7 +64,7 @@ function hasRoom({ personId, gradesWanted, now }: Asker) {
   return sql<boolean>`candidate.grades_given + (
     select count(*) from lease other where other.candidate_id = candidate.id
       and other.person_id <> ${personId} and other.until > ${now}
-  ) < ${gradesWanted}`
+  ) < max(${gradesWanted}, candidate.looks_asked)`
 }
 
 export interface QueuedCandidate {
@@ -68,9 +79,10 @@ const SHOWN = ['candidate.id', 'candidate.name', 'candidate.ra_deg as raDeg', 'c
 
 /** What is lent to this person now and may still be graded, in the order in which it was lent. */
 export async function listLentCandidates(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
-  return openTo(db, asker)
+  return openTo(db, asker, 'either')
     .innerJoin('lease', 'lease.candidate_id', 'candidate.id')
     .select(SHOWN)
+    .where('lease.campaign_id', '=', asker.campaignId)
     .where('lease.person_id', '=', asker.personId)
     .where('lease.until', '>', asker.now)
     .where(hasRoom(asker))
@@ -79,9 +91,23 @@ export async function listLentCandidates(db: Kysely<DB>, asker: Asker, limit: nu
     .execute()
 }
 
-/** What may be lent to this person next: those nearest to their wanted number first, so that candidates get finished. */
+/**
+ * What may be lent to this person next: those that a lead has reopened, then those nearest to their wanted number, so that
+ * candidates get finished.
+ */
 export async function listNextCandidates(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
-  return openTo(db, asker)
+  const asked = await listNext(db, asker, 'by lead', limit)
+  const rest = limit - asked.length
+  return rest > 0 ? [...asked, ...(await listNext(db, asker, 'by rule', rest))] : asked
+}
+
+function listNext(
+  db: Kysely<DB>,
+  asker: Asker,
+  wanted: 'by lead' | 'by rule',
+  limit: number,
+): Promise<QueuedCandidate[]> {
+  return openTo(db, asker, wanted)
     .select(SHOWN)
     .where(hasRoom(asker))
     .where((e) =>
@@ -103,10 +129,14 @@ export async function listNextCandidates(db: Kysely<DB>, asker: Asker, limit: nu
 
 /** How many candidates this person may still be shown, those on other people's benches included. */
 export async function countOpenCandidates(db: Kysely<DB>, asker: Asker): Promise<number> {
-  const row = await openTo(db, asker)
-    .select((e) => e.fn.countAll<number>().as('n'))
-    .executeTakeFirstOrThrow()
-  return row.n
+  let open = 0
+  for (const wanted of ['by rule', 'by lead'] as const) {
+    const row = await openTo(db, asker, wanted)
+      .select((e) => e.fn.countAll<number>().as('n'))
+      .executeTakeFirstOrThrow()
+    open += row.n
+  }
+  return open
 }
 
 export async function countGradedCandidates(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {

@@ -27,7 +27,7 @@ export async function listRulingsOf(db: Kysely<DB>, candidateId: number): Promis
     .execute()
 }
 
-/** Appends the ruling and makes it the candidate's newest. */
+/** Appends the ruling and makes it the candidate's newest, with the looks that are asked for from now. */
 export async function insertRuling(
   db: Kysely<DB>,
   ruling: {
@@ -36,6 +36,7 @@ export async function insertRuling(
     outcome: RulingOutcome
     grade: 'A' | 'B' | 'C' | null
     reason: string
+    looksAsked: number
     now: IsoTime
   },
 ): Promise<number> {
@@ -51,7 +52,11 @@ export async function insertRuling(
     })
     .returning('id')
     .executeTakeFirstOrThrow()
-  await db.updateTable('candidate').set({ ruling_id: id }).where('id', '=', ruling.candidateId).execute()
+  await db
+    .updateTable('candidate')
+    .set({ ruling_id: id, looks_asked: ruling.looksAsked })
+    .where('id', '=', ruling.candidateId)
+    .execute()
   return id
 }
 

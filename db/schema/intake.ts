@@ -88,6 +88,8 @@ export interface CandidateTable {
   imaged_at: IsoTime | null
   /** Standing first grades, 'cannot judge' included. */
   grades_given: Generated<number>
+  /** Looks that a lead has asked for by reopening it; counts where it is above what the rule wants. */
+  looks_asked: Generated<number>
   state: Generated<CandidateState>
   state_cause: StateCause | null
   state_cause_id: number | null

@@ -163,14 +163,15 @@ async function assertRoom(
   personId: number,
   rule: RuleInForce,
 ): Promise<void> {
-  if (candidate.grades_given >= rule.gradesWanted) {
+  const wanted = Math.max(rule.gradesWanted, candidate.looks_asked)
+  if (candidate.grades_given >= wanted) {
     throw conflict(
       'candidate-full',
-      `Others have given this candidate the ${rule.gradesWanted} grades it wanted meanwhile, so yours was not taken. Nothing else is affected; go on with the next.`,
+      `Others have given this candidate the ${wanted} grades it wanted meanwhile, so yours was not taken. Nothing else is affected; go on with the next.`,
     )
   }
   const { own, others } = await countLiveLeases(transaction, candidate.id, personId, isoTime())
-  if (own === 0 && candidate.grades_given + others >= rule.gradesWanted) {
+  if (own === 0 && candidate.grades_given + others >= wanted) {
     throw conflict(
       'candidate-full',
       'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.',

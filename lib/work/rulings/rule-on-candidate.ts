@@ -9,6 +9,7 @@ import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
 import { applyStates, type StateOutcome } from '@/lib/work/consensus/apply-state'
+import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { RulingInput } from './ruling-input'
 
@@ -36,7 +37,10 @@ export async function ruleOnCandidate(
     const now = isoTime()
     const { outcome, grade, reason } = ruling
     const personId = permit.viewer.id
-    const rulingId = await insertRuling(transaction, { candidateId, personId, outcome, grade, reason, now })
+    const { gradesWanted } = await ruleInForce(transaction, permit.campaign.id)
+    const looksAsked = looksAskedBy(outcome, candidate, gradesWanted)
+    const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
+    const rulingId = await insertRuling(transaction, row)
     const result = await outcomeOf(transaction, candidate, ruling, rulingId)
     await applyStates(transaction, permit.campaign, [result], now)
     await recordEvent(transaction, {
@@ -48,6 +52,16 @@ export async function ruleOnCandidate(
     })
     return { rulingId, state: result.state }
   })
+}
+
+/**
+ * Reopening a candidate that has all its looks asks for one more; again reopened it is one more again. Any other ruling takes back
+ * what was asked for and not given. The looks that stand are never above the larger of what is asked and what the rule wants.
+ */
+function looksAskedBy(outcome: RulingInput['outcome'], candidate: Candidate, gradesWanted: number): number {
+  const { grades_given: given, looks_asked: asked } = candidate
+  if (outcome !== 'open') return Math.min(asked, given)
+  return given >= Math.max(gradesWanted, asked) ? given + 1 : asked
 }
 
 async function assertCanRule(db: Kysely<DB>, candidate: Candidate, ruling: RulingInput): Promise<void> {
