@@ -6,6 +6,7 @@ import { recordEvent } from '@/lib/platform/audit/record-event'
 import { isoTime } from '@/lib/platform/clock'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
+import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict } from '@/lib/platform/problems/problem'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import type { RuleInput } from './campaign-input'
@@ -47,12 +48,7 @@ export async function changeRule(
       createdBy: viewer.id,
       now,
     })
-    await enqueueJob(transaction, {
-      kind: JOB.consensus,
-      campaignId,
-      uniqueKey: `consensus:${campaignId}`,
-      payload: { campaignId },
-    })
+    await requestConsensus(transaction, campaignId)
     await recordEvent(transaction, {
       personId: viewer.id,
       campaignId,

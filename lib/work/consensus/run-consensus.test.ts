@@ -1,3 +1,4 @@
+import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import { insertRule, requireRule } from '@/db/queries/campaigns'
@@ -9,7 +10,6 @@ import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_suppor
 import { decisionRows, giveGrade, giveGrades } from './_give-grade'
 import { computeRun } from './compute-run'
 import { consensusJob } from './consensus-job'
-import { requestConsensus } from './request-consensus'
 import { runConsensus, runConsensusByItself } from './run-consensus'
 
 const RULE = { gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 1 }

@@ -17,12 +17,10 @@ import type { DB } from '@/db/schema'
 import type { GradeLetter, GradeRow } from '@/db/schema/grading'
 import { fromJson, toJson, type IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
-import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
-import { JOB } from '@/lib/platform/jobs/job-kinds'
+import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict, invalid, notFound } from '@/lib/platform/problems/problem'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import { queueProgress, type QueueProgress } from '@/lib/work/queue/queue-progress'
 import type { GradeInput } from './grade-input'
 
 export interface GivenGrade {
@@ -36,7 +34,7 @@ export interface GivenGrade {
   givenAt: IsoTime
 }
 
-export interface RecordedGrade extends QueueProgress {
+export interface RecordedGrade {
   /** The person's grade of this candidate as it stands now. */
   grade: GivenGrade
   /** The id of the grade that this call corrected. */
@@ -91,13 +89,13 @@ export async function recordGrade(
       given_at: isoTime(),
     })
     if (!standing) await setFirstGradeGiven(transaction, candidateId, viewer.id)
-    if (candidate.grades_given + (standing ? 0 : 1) >= rule.leastGrades) await askForConsensus(transaction, campaign.id)
+    if (candidate.grades_given + (standing ? 0 : 1) >= rule.leastGrades)
+      await requestConsensus(transaction, campaign.id, CONSENSUS_DELAY_MS)
     return { row, replaced: standing?.uid ?? null }
   })
   return {
     grade: shapeGrade(recorded.row),
     ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
-    ...(await queueProgress(db, permit)),
   }
 }
 
@@ -177,17 +175,6 @@ async function assertRoom(
       'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.',
     )
   }
-}
-
-/** Same kind, key and payload as the consensus room asks with. */
-async function askForConsensus(transaction: Transaction<DB>, campaignId: number): Promise<void> {
-  await enqueueJob(transaction, {
-    kind: JOB.consensus,
-    campaignId,
-    uniqueKey: `${JOB.consensus}:${campaignId}`,
-    payload: { campaignId },
-    delayMs: CONSENSUS_DELAY_MS,
-  })
 }
 
 function shapeGrade(row: GradeRow): GivenGrade {
