@@ -101,8 +101,9 @@ export function removeLensLight(planes: NormalisedPlane[]): RemovedLight {
   const galaxy = fitGalaxy(planes, core)
   const residuals = planes.map((plane, k) => {
     const { light } = galaxy.bands[k]
+    const before = plane.values
     const values = new Float32Array(light.length)
-    for (let i = 0; i < values.length; i++) values[i] = plane.values[i] - light[i]
+    for (let i = 0; i < values.length; i++) values[i] = before[i] - light[i]
     for (const i of galaxy.saturated[k]) values[i] = Number.NaN
     return { ...plane, values }
   })
@@ -138,9 +139,12 @@ function noteOn(galaxy: GalaxyLight, planes: NormalisedPlane[], residuals: Norma
   let lights = 0
   let count = 0
   for (let i = 0; i < values.length; i++) {
-    const distance = Math.hypot((i % width) - geometry.x, Math.floor(i / width) - geometry.y)
     const value = values[i]
     if (value !== value) continue
+    const dx = (i % width) - geometry.x
+    const dy = ((i / width) | 0) - geometry.y
+    // Not Math.hypot, which is many times slower and guards against overflows that cannot be here.
+    const distance = Math.sqrt(dx * dx + dy * dy)
     if (excluded[i] === ABOVE && value > second && distance > CHECK_RADIUS) {
       second = value
       secondAt = distance

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import { simulateCandidate } from '@/lib/science/lensing/simulate-candidate'
 import { channelWeights, colourBalance } from './colour-channels'
-import { defaultRecipe } from './recipe'
+import { defaultRecipe, extraLimits } from './recipe'
 import { MISSING_GREY } from './render-grey'
 import { renderViews, type BandPlane, type RenderedView } from './render-views'
 
@@ -296,5 +296,26 @@ describe('what is missing or odd', () => {
 
   it('refuses a plane whose pixels do not fill its size', () => {
     expect(() => renderViews([{ ...blob('g', 1), width: 39 }], recipe)).toThrow('Band g has 1600 pixels, not 39 x 40.')
+  })
+})
+
+describe('a recipe that was stored before there were other parts', () => {
+  it('still makes its own views, and the same pictures as one that spells those parts out', () => {
+    const { version, colour, deep, band } = recipe
+    const stored = JSON.parse(
+      JSON.stringify({ version, views: ['colour', 'deep', 'band:g', 'band:r', 'band:i'], colour, deep, band }),
+    ) as typeof recipe
+    const views = renderViews(lens(), stored)
+    expect(views.map((view) => view.key)).toEqual(stored.views)
+    const spelt = { ...stored, ...extraLimits(stored), northUp: false, weights: { g: 1, r: 1, i: 1 } }
+    expect(renderViews(lens(), spelt)).toEqual(views)
+  })
+
+  it('makes views that came later too, by their usual limits', () => {
+    const { version, colour, deep, band } = recipe
+    const stored = { version, views: ['residual', 'blue', 'core'], colour, deep, band }
+    const usual = renderViews(lens(), { ...stored, ...extraLimits(recipe) })
+    expect(usual).toHaveLength(3)
+    expect(renderViews(lens(), stored)).toEqual(usual)
   })
 })

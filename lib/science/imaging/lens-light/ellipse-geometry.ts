@@ -46,14 +46,20 @@ export function heldEllipticity([e1, e2]: [number, number]): [number, number] {
   return e > MOST_ELLIPTICAL ? [(e1 * MOST_ELLIPTICAL) / e, (e2 * MOST_ELLIPTICAL) / e] : [e1, e2]
 }
 
-/** How m of one pixel answers to the geometry: dm / d(x, y, core1, core2, outer1, outer2), into `out`. */
-export function radiusDerivatives(geometry: EllipseGeometry, column: number, row: number, out: Float64Array): number {
+/** Place of m in what radiusDerivatives writes. */
+export const RADIUS = 6
+
+/**
+ * How m of one pixel answers to the geometry: dm / d(x, y, core1, core2, outer1, outer2) into `out`, and m itself behind them:
+ * a number that is returned is boxed at every pixel.
+ */
+export function radiusDerivatives(geometry: EllipseGeometry, column: number, row: number, out: Float64Array): void {
   const dx = column - geometry.x
   const dy = row - geometry.y
   const square = dx * dx + dy * dy
   if (square < 1e-6) {
     out.fill(0)
-    return 0
+    return
   }
   const share = square / (square + geometry.turnRadius ** 2)
   const e1 = geometry.core[0] + (geometry.outer[0] - geometry.core[0]) * share
@@ -72,5 +78,5 @@ export function radiusDerivatives(geometry: EllipseGeometry, column: number, row
   out[3] = second * (1 - share)
   out[4] = first * share
   out[5] = second * share
-  return m
+  out[RADIUS] = m
 }

@@ -6,7 +6,7 @@ import { ellipticalRadii, type EllipseGeometry } from './ellipse-geometry'
 import { galaxyStack, type Core } from './find-core'
 import { basisFor, fitProfile, type ProfileBasis, type RadialProfile } from './gaussian-profile'
 import { improveGeometry } from './geometry-step'
-import { MISSING, profileRows, Rings, type ForeignLight } from './profile-rows'
+import { MISSING, profileRows, ringsFor, type ForeignLight, type Rings, type SortedRings } from './profile-rows'
 import { markAbove, markBluer } from './source-mask'
 
 /** Share of the light by which ellipses miss a galaxy before they have settled, round by round. */
@@ -54,7 +54,7 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
     ? { values: difference.values, smooth: markBluer(coloured, difference, width, height) }
     : null
   const basis = basisFor(Math.ceil(Math.hypot(width, height)))
-  const rings = new Rings(0.6 * Math.max(width, height))
+  const rings = ringsFor(0.6 * Math.max(width, height))
   const fitReach = 0.3 * Math.max(width, height)
   let geometry: EllipseGeometry = { x: core.x, y: core.y, core: [0, 0], outer: [0, 0], turnRadius: 2.5 }
   const anchor = geometry
@@ -64,7 +64,7 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
   for (const shapeDoubt of SHAPE_DOUBTS) {
     const radii = ellipticalRadii(geometry, width, height)
     const sorted = rings.sort(radii)
-    profile = fitProfile(basis, profileRows(basis, sorted, radii, stack, excluded, profile, foreign))
+    profile = fitProfile(basis, profileRows(basis, rings, sorted, radii, stack, excluded, profile, foreign))
     excluded = coloured.slice()
     markAbove(excluded, stack, radii, profile, width, height, shapeDoubt)
     geometry = { ...geometry, turnRadius: turn * turnRadiusOf(profile) }
@@ -88,7 +88,9 @@ export function fitGalaxy(planes: NormalisedPlane[], core: Core): GalaxyLight {
       geometry = { ...geometry, core: [0, 0] }
     }
   }
-  const bands = planes.map((plane) => fitBand(plane, geometry, excluded, basis, rings, fitReach, foreign))
+  const start = ellipticalRadii(geometry, width, height)
+  const shared = { radii: start, sorted: rings.sort(start) }
+  const bands = planes.map((plane) => fitBand(plane, geometry, shared, excluded, basis, rings, fitReach, foreign))
   return { core, saturated, geometry, excluded, bands }
 }
 
@@ -103,6 +105,8 @@ function turnRadiusOf(profile: RadialProfile): number {
 function fitBand(
   plane: NormalisedPlane,
   joint: EllipseGeometry,
+  /** Pixels by the joint ellipses, from which every band begins. */
+  shared: { radii: Float32Array; sorted: SortedRings },
   excluded: Uint8Array,
   basis: ProfileBasis,
   rings: Rings,
@@ -110,17 +114,17 @@ function fitBand(
   foreign: ForeignLight | null,
 ): BandLight {
   const { width, height, values } = plane
-  let geometry = joint
-  let profile: RadialProfile | null = null
-  let radii = ellipticalRadii(geometry, width, height)
-  for (let round = 0; round < 2; round++) {
-    const sorted = rings.sort(radii)
-    profile = fitProfile(basis, profileRows(basis, sorted, radii, values, excluded, profile, foreign))
-    if (round === 1) break
-    geometry = improveGeometry(geometry, profile, values, excluded, foreign, width, height, fitReach, 0.02, BAND, joint)
-    radii = ellipticalRadii(geometry, width, height)
-  }
+  const first = fitProfile(
+    basis,
+    profileRows(basis, rings, shared.sorted, shared.radii, values, excluded, null, foreign),
+  )
+  const geometry = improveGeometry(joint, first, values, excluded, foreign, width, height, fitReach, 0.02, BAND, joint)
+  const radii = ellipticalRadii(geometry, width, height)
+  const profile = fitProfile(
+    basis,
+    profileRows(basis, rings, rings.sort(radii), radii, values, excluded, first, foreign),
+  )
   const light = new Float32Array(values.length)
-  if (profile) for (let i = 0; i < light.length; i++) light[i] = profile.at(radii[i])
-  return { geometry, profile: profile as RadialProfile, light }
+  for (let i = 0; i < light.length; i++) light[i] = profile.at(radii[i])
+  return { geometry, profile, light }
 }

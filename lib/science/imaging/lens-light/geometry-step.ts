@@ -1,5 +1,5 @@
 /** One step of Gauss and Newton of the ellipses towards what the residual says. */
-import { heldEllipticity, radiusDerivatives, type EllipseGeometry } from './ellipse-geometry'
+import { heldEllipticity, RADIUS, radiusDerivatives, type EllipseGeometry } from './ellipse-geometry'
 import type { RadialProfile } from './gaussian-profile'
 import { solveSymmetric } from './nnls'
 import { ABOVE, FOREIGN, MISSING, type ForeignLight } from './profile-rows'
@@ -35,7 +35,7 @@ export function improveGeometry(
 ): EllipseGeometry {
   const gram = new Float64Array(PARAMETERS * PARAMETERS)
   const moment = new Float64Array(PARAMETERS)
-  const slopes = new Float64Array(PARAMETERS)
+  const slopes = new Float64Array(PARAMETERS + 1)
   const bottom = Math.max(0, Math.ceil(geometry.y - reach))
   const top = Math.min(height - 1, Math.floor(geometry.y + reach))
   const left = Math.max(0, Math.ceil(geometry.x - reach))
@@ -44,7 +44,8 @@ export function improveGeometry(
     for (let column = left; column <= right; column++) {
       const i = row * width + column
       if (excluded[i] === MISSING || (excluded[i] === FOREIGN && foreign === null)) continue
-      const m = radiusDerivatives(geometry, column, row, slopes)
+      radiusDerivatives(geometry, column, row, slopes)
+      const m = slopes[RADIUS]
       if (m > reach || (m > CORE_REACH && excluded[i] === ABOVE)) continue
       // The core alone says where the centre is: outside, neighbours would pull at it.
       if (m > CORE_REACH) slopes[0] = slopes[1] = 0
