@@ -3,7 +3,7 @@ import { EmptyState } from '@/components/ui/notice'
 import { ButtonLink } from '@/components/ui/button'
 import type { CampaignCard } from '@/lib/work/campaigns/list-campaigns'
 import { counted, percent } from './in-words'
-import { ProgressBar } from './progress-bar'
+import { ProgressBar } from '@/components/ui/progress-bar'
 
 /** What matters most about this campaign to this person, in one line. */
 function waiting(card: CampaignCard): string {

@@ -3,7 +3,7 @@ import { ButtonLink } from '@/components/ui/button'
 import type { CampaignOverview } from '@/lib/work/campaigns/campaign-overview'
 import { counted, percent } from './in-words'
 import type { Step } from './next-steps'
-import { ProgressBar } from './progress-bar'
+import { ProgressBar } from '@/components/ui/progress-bar'
 
 export function Part({ title, children }: { title: string; children: ReactNode }) {
   return (
@@ -26,6 +26,7 @@ export function GradingProgress({ overview }: { overview: CampaignOverview }) {
         <span className="figures text-text">{given.toLocaleString('en')}</span> of{' '}
         <span className="figures text-text">{wanted.toLocaleString('en')}</span> wanted:{' '}
         {counted(gradesWanted, 'person', 'people')} for each of {counted(overview.imaged, 'imaged candidate')}
+        {wanted < gradesWanted * overview.imaged ? ', none at what a ruling has decided' : ''}
         {unread > 0 ? `; ${counted(unread, 'candidate')} without pictures yet` : ''}.
       </p>
     </Part>
