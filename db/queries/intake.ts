@@ -230,25 +230,30 @@ export async function setFileFates(
 }
 
 async function settleReplaced(db: Kysely<DB>, ids: readonly number[], now: string): Promise<void> {
+  const settled = { fate: 'duplicate', fault: null, reason: NOT_NEEDED, duplicate_of: null, updated_at: now } as const
+  // Each by the index on replaced_by: this is done for every file that is read.
   await db
     .updateTable('file')
-    .set({ fate: 'duplicate', fault: null, reason: NOT_NEEDED, duplicate_of: null, updated_at: now })
-    .where('fate', '=', 'stored')
-    .where((e) =>
-      e.or([
-        e('replaced_by', 'in', ids),
-        // Replaced by the same newer file, which was refused, so that one of `ids` was read in its stead.
-        e.exists(
-          e
-            .selectFrom('file as later')
-            .select('later.id')
-            .where('later.id', 'in', ids)
-            .whereRef('later.replaced_by', '=', 'file.replaced_by')
-            .whereRef('later.id', '>', 'file.id'),
-        ),
-      ]),
-    )
+    .set(settled)
+    .where('replaced_by', 'in', ids)
+    .where(sql<SqlBool>`+fate = 'stored'`)
     .execute()
+  // These were read in the stead of a newer file that was refused: so earlier ones that it replaced too need not be read.
+  const stead = await db
+    .selectFrom('file')
+    .select(['id', 'replaced_by'])
+    .where('id', 'in', ids)
+    .where('replaced_by', 'is not', null)
+    .execute()
+  for (const { id, replaced_by } of stead) {
+    await db
+      .updateTable('file')
+      .set(settled)
+      .where('replaced_by', '=', replaced_by)
+      .where('id', '<', id)
+      .where(sql<SqlBool>`+fate = 'stored'`)
+      .execute()
+  }
 }
 
 /** Of these files, the ones that are still to be read, paused or not. */
