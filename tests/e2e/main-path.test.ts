@@ -113,6 +113,9 @@ describe('the main path', () => {
   it('takes 37 files, refuses the damaged one in words, knows the duplicate, and images the rest', async () => {
     await lead.goto(`${server.url}${HOME}/intake`)
     await lead.getByLabel('Files to send').setInputFiles(delivered.files)
+    await lead.getByRole('heading', { name: /^37 files for/ }).waitFor()
+    await expectAccessible(lead)
+    await lead.getByRole('button', { name: 'Take them in' }).click()
     const files = async () => {
       const answer = await lead.request.get(`${server.url}/api/campaigns/marsh-test/files`)
       return (await answer.json()) as { files: { name: string; fate: string; reason: string | null }[] }
@@ -127,6 +130,15 @@ describe('the main path', () => {
     expect(data.filter(({ fate }) => fate === 'imaged')).toHaveLength(35)
     await expect.poll(() => lead.getByText(delivered.damaged).count(), { timeout: 20_000 }).toBeGreaterThan(0)
     await expectAccessible(lead)
+  })
+
+  it('sends nothing when the same files are chosen again', async () => {
+    let sent = 0
+    lead.on('request', (request) => void (sent += request.method() === 'PUT' ? 1 : 0))
+    await lead.getByLabel('Files to send').setInputFiles(delivered.files)
+    await lead.getByRole('button', { name: 'Take them in' }).click()
+    await lead.getByText('37 files sent, 37 of them here before.').waitFor()
+    expect(sent).toBe(0)
   })
 
   it('lets three graders grade everything by keyboard at the same time, each candidate three times in all', async () => {

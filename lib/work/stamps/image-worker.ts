@@ -3,6 +3,8 @@
  * touch the database, the settings or Next. Also called directly by tests.
  */
 import { readFileSync } from 'node:fs'
+import { setPriority } from 'node:os'
+import { isMainThread } from 'node:worker_threads'
 import { bandsOfFile } from '@/lib/work/intake/bands-of-file'
 import { candidateOfHeaders } from '@/lib/work/intake/candidate-of-header'
 import { parseManifest, type ParsedManifest } from '@/lib/work/intake/parse-manifest'
@@ -22,6 +24,10 @@ import type {
   ProbeTask,
   StoredFile,
 } from './worker-tasks'
+
+// Requests go before imaging. On Linux this is the niceness of the calling thread alone (setpriority(2), 'C library/kernel
+// differences'); elsewhere it would be that of the whole server.
+if (!isMainThread && process.platform === 'linux') setPriority(10)
 
 /** While the PNGs of this many candidates are encoded in libuv's threads, the next is read and rendered here. */
 const AHEAD = 3
