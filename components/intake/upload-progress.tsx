@@ -5,7 +5,7 @@ import { Notice } from '@/components/ui/notice'
 import { counted } from '@/components/campaigns/in-words'
 import { ToolButton } from '@/components/table/tool-button'
 import { fileSize } from './file-size'
-import { ProgressBar } from './progress-bar'
+import { ProgressBar } from '@/components/ui/progress-bar'
 import type { UploadQueue, UploadState } from './upload-queue'
 
 const FAILED_SHOWN = 20

@@ -1,7 +1,7 @@
 import { counted } from '@/components/campaigns/in-words'
 import { Notice } from '@/components/ui/notice'
 import type { IntakeSummary } from '@/lib/work/intake/delivered-file'
-import { ProgressBar } from './progress-bar'
+import { ProgressBar } from '@/components/ui/progress-bar'
 
 /** What the server is doing. It goes on without this page, and after a restart. */
 export function WorkProgress({ summary }: { summary: IntakeSummary }) {

@@ -3,7 +3,7 @@
 import { useRouter } from 'next/navigation'
 import { useEffect, useEffectEvent, useState } from 'react'
 import { counted } from '@/components/campaigns/in-words'
-import { ProgressBar } from '@/components/intake/progress-bar'
+import { ProgressBar } from '@/components/ui/progress-bar'
 import { Notice } from '@/components/ui/notice'
 import type { RecipeProgress } from '@/lib/work/stamps/recipe-versions'
 import { askProgress } from './recipe-api'

@@ -6,8 +6,8 @@ export function ProgressBar({ done, total, label }: { done: number; total: numbe
       role="progressbar"
       aria-label={label}
       aria-valuemin={0}
-      aria-valuemax={total}
-      aria-valuenow={done}
+      aria-valuemax={100}
+      aria-valuenow={Math.round(share * 100)}
       className="h-1.5 overflow-hidden rounded-full bg-line"
     >
       <div className="h-full rounded-full bg-grade-a" style={{ width: `${share * 100}%` }} />
