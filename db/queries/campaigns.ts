@@ -3,6 +3,7 @@ import type { DB } from '../schema'
 import type { Campaign, MeanParameters, RecipeRow, Rule } from '../schema/campaigns'
 import type { Role } from '../schema/people'
 import { toJson } from '../schema/values'
+import { lookSums } from './overview'
 
 export async function insertCampaign(
   db: Kysely<DB>,
@@ -48,8 +49,9 @@ export interface CampaignSummary {
   gradesWanted: number
   candidates: number
   imaged: number
-  /** Standing looks, none counted above what is wanted. */
-  gradesGiven: number
+  /** Looks given and wanted at all imaged candidates together, as the overview counts them. */
+  looksGiven: number
+  looksWanted: number
   confirmed: number
   split: number
 }
@@ -57,6 +59,7 @@ export interface CampaignSummary {
 /** The campaigns that a person is in, newest first. Calibration candidates are counted only for graders, to whom they are like any other. */
 export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<CampaignSummary[]> {
   const wanted = sql<number>`(select grades_wanted from rule where rule.campaign_id = campaign.id order by version desc limit 1)`
+  const looks = lookSums(wanted)
   return db
     .selectFrom('membership')
     .innerJoin('campaign', 'campaign.id', 'membership.campaign_id')
@@ -65,12 +68,14 @@ export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<C
         .onRef('candidate.campaign_id', '=', 'campaign.id')
         .on((e) => e.or([e('candidate.truth', 'is', null), e('membership.role', '=', 'grader')])),
     )
+    .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
     .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
     .select((e) => [
       wanted.as('gradesWanted'),
       e.fn.count<number>('candidate.id').as('candidates'),
       e.fn.count<number>('candidate.imaged_at').as('imaged'),
-      sql<number>`coalesce(sum(min(candidate.grades_given, ${wanted})), 0)`.as('gradesGiven'),
+      looks.given.as('looksGiven'),
+      looks.wanted.as('looksWanted'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'confirmed').as('confirmed'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'split').as('split'),
     ])

@@ -1,4 +1,4 @@
-import { sql, type Kysely } from 'kysely'
+import { sql, type Expression, type Kysely, type RawBuilder } from 'kysely'
 import type { DB } from '../schema'
 
 export interface LookSums {
@@ -7,27 +7,31 @@ export interface LookSums {
 }
 
 /**
- * Standing looks at imaged candidates, none counted above `gradesWanted`, and looks wanted; a candidate that a ruling has
- * decided wants no more than it has.
+ * Standing looks at imaged candidates, none counted above what is wanted, and looks wanted, by the rule or by a lead who
+ * reopened; a candidate that a ruling has decided wants no more than it has. For queries that join `candidate` and
+ * `ruling`, its standing one.
  */
+export function lookSums(gradesWanted: number | Expression<number>): Record<keyof LookSums, RawBuilder<number>> {
+  const most = sql<number>`max(${gradesWanted}, candidate.looks_asked)`
+  const given = sql<number>`min(candidate.grades_given, ${most})`
+  const wanted = sql<number>`case when ruling.outcome in ('confirmed', 'set aside') then ${given} else ${most} end`
+  const ofImaged = (looks: RawBuilder<number>) =>
+    sql<number>`coalesce(sum(case when candidate.imaged_at is not null then ${looks} end), 0)`
+  return { given: ofImaged(given), wanted: ofImaged(wanted) }
+}
+
 export async function sumLooks(
   db: Kysely<DB>,
   { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
   gradesWanted: number,
 ): Promise<LookSums> {
-  const given = sql<number>`min(candidate.grades_given, ${gradesWanted})`
+  const { given, wanted } = lookSums(gradesWanted)
   return db
     .selectFrom('candidate')
     .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
-    .select([
-      sql<number>`coalesce(sum(${given}), 0)`.as('given'),
-      sql<number>`coalesce(sum(case when ruling.outcome in ('confirmed', 'set aside') then ${given} else ${gradesWanted} end), 0)`.as(
-        'wanted',
-      ),
-    ])
+    .select([given.as('given'), wanted.as('wanted')])
     .where('candidate.campaign_id', '=', campaignId)
     .$if(!withCalibration, (query) => query.where('candidate.truth', 'is', null))
-    .where('candidate.imaged_at', 'is not', null)
     .executeTakeFirstOrThrow()
 }
 

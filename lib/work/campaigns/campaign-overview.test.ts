@@ -69,6 +69,10 @@ it('wants no more looks at what a ruling has decided', async () => {
     .executeTakeFirstOrThrow()
   await db.updateTable('candidate').set({ ruling_id: ruling.id }).where('id', '=', id).execute()
   expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 1 })
+  // The home page and the API count as the overview does.
+  await addImagedCandidate(db, campaign, 'B')
+  expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 4 })
+  expect((await listCampaigns(db, lead))[0]).toMatchObject({ gradesGiven: 1, gradesWanted: 4 })
 })
 
 it('tells a grader no outcome, a viewer no upkeep, and counts calibration stamps for nobody but graders', async () => {

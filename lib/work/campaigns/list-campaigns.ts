@@ -17,7 +17,7 @@ export interface CampaignCard {
   candidates: number
   imaged: number
   gradesGiven: number
-  /** Looks wanted altogether. */
+  /** Looks wanted altogether; a candidate that a ruling has decided wants no more than it has. */
   gradesWanted: number
   /** Left for this person to look at; null for a viewer, who grades nothing. */
   left: number | null
@@ -32,9 +32,10 @@ export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Prom
   const now = isoTime()
   const rows = await listCampaignRows(db, viewer.id)
   return Promise.all(
-    rows.map(async ({ id, gradesWanted, confirmed, split, ...row }) => ({
+    rows.map(async ({ id, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
       ...row,
-      gradesWanted: gradesWanted * row.imaged,
+      gradesGiven: looksGiven,
+      gradesWanted: looksWanted,
       left:
         row.role === 'viewer'
           ? null
