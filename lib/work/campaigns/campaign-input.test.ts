@@ -39,8 +39,19 @@ describe('the rule', () => {
     [{ confirmMean: '1', setAsideMean: '1' }, 'setAsideMean'],
     [{ splitSpread: 'Infinity' }, 'splitSpread'],
     [{ splitSpread: 'abc' }, 'splitSpread'],
+    [{ splitSpread: '1.51' }, 'splitSpread'],
+    [{ splitSpread: '-0.1' }, 'splitSpread'],
   ])('refuses %j with a sentence at its field', (fields, name) => {
     expect(Object.keys(faults(() => RuleInput.parse(fields)))).toEqual([name])
+  })
+})
+
+it('takes a spread up to the largest that grades can have, and says which that is', () => {
+  // Population standard deviation of one 3 and one 0: sqrt(mean of squares - square of mean) = sqrt(4.5 - 2.25).
+  expect(RuleInput.parse({ splitSpread: String(Math.sqrt(9 / 2 - 1.5 ** 2)) }).splitSpread).toBe(1.5)
+  expect(faults(() => RuleInput.parse({ splitSpread: '2' }))).toEqual({
+    splitSpread:
+      'The spread that splits is between 0 and 1.5 points: as many A as N spread by 1.5, and nothing spreads more.',
   })
 })
 

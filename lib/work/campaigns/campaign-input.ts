@@ -17,14 +17,17 @@ const count = (what: string, fallback: number) =>
     )
     .default(fallback)
 
-const points = (what: string, fallback: number) =>
+/** The most that the population standard deviation of grades from 0 to 3 points can be: half of them A, half N. */
+const LARGEST_SPREAD = 1.5
+
+const points = (what: string, fallback: number, most = 3, why = '') =>
   z
     .preprocess(
       typedNumber,
       z
         .number(`${what} is a number of points, such as ${fallback}.`)
-        .min(0, `${what} is between 0 and 3 points.`)
-        .max(3, `${what} is between 0 and 3 points.`),
+        .min(0, `${what} is between 0 and ${most} points${why}.`)
+        .max(most, `${what} is between 0 and ${most} points${why}.`),
     )
     .default(fallback)
 
@@ -35,7 +38,12 @@ export const RuleInput = z
     leastGrades: count('The least number of grades', DEFAULT_MEAN_RULE.leastGrades),
     confirmMean: points('The mean that confirms', DEFAULT_MEAN_RULE.confirmMean),
     setAsideMean: points('The mean that sets aside', DEFAULT_MEAN_RULE.setAsideMean),
-    splitSpread: points('The spread that splits', DEFAULT_MEAN_RULE.splitSpread),
+    splitSpread: points(
+      'The spread that splits',
+      DEFAULT_MEAN_RULE.splitSpread,
+      LARGEST_SPREAD,
+      ': as many A as N spread by 1.5, and nothing spreads more',
+    ),
   })
   .superRefine((rule, context) => {
     if (rule.gradesWanted >= 1 && rule.leastGrades > rule.gradesWanted) {
