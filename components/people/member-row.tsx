@@ -82,7 +82,7 @@ export function MemberRow({
       <td className="ml-auto md:text-right">
         <ConfirmButton
           label="End membership"
-          name={`End ${who} membership`}
+          name={`End membership of ${member.name}${self ? ' (you)' : ''}`}
           question={`End ${who} membership?`}
           consequence={`${self ? 'You' : member.name} will not see this campaign any more. Grades already given stay and count; whoever is invited back keeps the pseudonym ${member.pseudonym}.`}
           confirm="End the membership"

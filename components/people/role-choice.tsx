@@ -22,7 +22,7 @@ export function RoleChoice({ error }: { error?: string }) {
             defaultChecked={role === 'grader'}
             aria-label={ROLE_LABEL[role]}
             aria-describedby={`role-${role}`}
-            className="mt-0.5 size-5 accent-(--lamp)"
+            className="mt-0.5 size-5 shrink-0 accent-(--lamp)"
           />
           <span>
             <span className="font-semibold">{ROLE_LABEL[role]}</span>

@@ -28,7 +28,8 @@ export function FilterField<Row>({ column, value, onChange }: FilterFieldProps<R
       onChange(column.id, wanted.join(','))
     }
     return (
-      <span role="group" aria-label={name} className={`relative z-10 flex gap-1 ${column.filterSpills ? 'w-0' : ''}`}>
+      // Above the next cells, below the pinned column.
+      <span role="group" aria-label={name} className={`relative z-1 flex gap-1 ${column.filterSpills ? 'w-0' : ''}`}>
         {column.filter.map((choice) => (
           <button
             key={choice}
