@@ -93,8 +93,11 @@ export function Stage({
           ) : null}
         </div>
       </div>
-      <figcaption className="flex min-h-6 items-center justify-center gap-3 px-3 text-note text-tray-text">
-        <span className="truncate">{view?.note ?? ''}</span>
+      {/* Room for two lines always, so that the picture keeps its size whatever there is to know of it. */}
+      <figcaption className="flex h-9 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
+        <span className="line-clamp-2" title={view?.note ?? undefined}>
+          {view?.note ?? ''}
+        </span>
       </figcaption>
     </figure>
   )
