@@ -18,6 +18,8 @@ vi.mock('@/lib/platform/storage/blobs', async () => {
 
 const { PUT } = await import('./route')
 const { GET, POST } = await import('../route')
+const problems = await import('../problems.csv/route')
+const batches = await import('../../batches/[id]/route')
 
 let scenario: Scenario
 beforeEach(async () => {
@@ -133,5 +135,108 @@ describe('POST /api/campaigns/{slug}/files', () => {
   it('is for leads', async () => {
     session.viewer = scenario.graders[0]
     expect((await retry('{"retry":"refused"}')).status).toBe(403)
+  })
+})
+
+describe('POST /api/campaigns/{slug}/files with names', () => {
+  const look = (body: unknown) =>
+    POST(
+      new NextRequest(`http://ringside.test/api/campaigns/${slug}/files`, {
+        method: 'POST',
+        body: JSON.stringify(body),
+      }),
+      { params: Promise.resolve({ slug }) },
+    )
+
+  it('answers what is here under them, so that only what is missing is sent', async () => {
+    await put('SWS1_g.fits', 'abc')
+    const { files } = await (await look({ look: [{ name: 'SWS1_g.fits' }, { name: 'SWS1_r.fits' }] })).json()
+    expect(files).toMatchObject([{ bytes: 3, fate: 'stored' }, null])
+  })
+
+  it.each([
+    ['a grader', () => scenario.graders[0], 403],
+    ['a stranger', () => scenario.stranger, 404],
+  ])('tells nothing to %s', async (_, who, status) => {
+    session.viewer = who()
+    expect((await look({ look: [] })).status).toBe(status)
+  })
+})
+
+describe('GET /api/campaigns/{slug}/files/problems.csv', () => {
+  const download = () =>
+    problems.GET(new NextRequest(`http://ringside.test/api/campaigns/${slug}/files/problems.csv`), {
+      params: Promise.resolve({ slug }),
+    })
+
+  it('is a file to save', async () => {
+    const response = await download()
+    expect(response.headers.get('content-disposition')).toBe('attachment; filename="north-field-problems.csv"')
+    expect(await response.text()).toBe('file,kind,batch,fate,fault,line,problem,delivered_at\r\n')
+  })
+
+  it('does not stand in the way of a manifest of that name', async () => {
+    const response = await problems.PUT(
+      new NextRequest(`http://ringside.test/api/campaigns/${slug}/files/problems.csv`, {
+        method: 'PUT',
+        body: 'abc',
+        headers: { 'content-length': '3' },
+      }),
+      { params: Promise.resolve({ slug }) },
+    )
+    expect(response.status).toBe(201)
+    expect(await response.json()).toMatchObject({ name: 'problems.csv', fate: 'stored' })
+  })
+
+  it.each([
+    ['a viewer', () => scenario.reader, 403],
+    ['a stranger', () => scenario.stranger, 404],
+  ])('is not for %s', async (_, who, status) => {
+    session.viewer = who()
+    expect((await download()).status).toBe(status)
+  })
+})
+
+describe('POST /api/campaigns/{slug}/batches/{id}', () => {
+  const control = (id: string, body: unknown) =>
+    batches.POST(
+      new NextRequest(`http://ringside.test/api/campaigns/${slug}/batches/${id}`, {
+        method: 'POST',
+        body: JSON.stringify(body),
+      }),
+      { params: Promise.resolve({ slug, id }) },
+    )
+
+  it('cancels the reading of a batch', async () => {
+    await put('SWS1_g.fits', 'abc')
+    expect(await (await control('1', { reading: 'cancel' })).json()).toEqual({ cancelled: 1 })
+  })
+
+  it.each([
+    ['another word', '1', { reading: 'stop' }, () => scenario.lead, 422],
+    ['a batch that is not there', '7', { reading: 'pause' }, () => scenario.lead, 404],
+    ['a grader', '1', { reading: 'cancel' }, () => scenario.graders[0], 403],
+  ])('refuses %s and changes nothing', async (_, id, body, who, status) => {
+    await put('SWS1_g.fits', 'abc')
+    session.viewer = who()
+    expect((await control(id, body)).status).toBe(status)
+    expect(await scenario.db.selectFrom('file').select('fate').execute()).toEqual([{ fate: 'stored' }])
+    expect(await scenario.db.selectFrom('batch').select('state').execute()).toEqual([{ state: 'open' }])
+  })
+})
+
+describe('the columns of a manifest', () => {
+  it('are kept with it, and another choice has it read again', async () => {
+    const columns = (chosen: string) => put(`list.csv?columns=${encodeURIComponent(chosen)}`, 'abc')
+    expect((await columns('{"candidate":"myid"}')).status).toBe(201)
+    await scenario.db.updateTable('file').set({ fate: 'read' }).execute()
+    expect(await (await columns('{"candidate":"myid"}')).json()).toMatchObject({ fate: 'duplicate' })
+    expect(await (await columns('{"candidate":"other"}')).json()).toMatchObject({ fate: 'stored' })
+    const rows = await scenario.db.selectFrom('file').select(['fate', 'columns']).execute()
+    expect(rows).toEqual([{ fate: 'stored', columns: '{"candidate":"other"}' }])
+  })
+
+  it.each(['nonsense', '[]', '{"colour":"red"}'])('are refused as %s', async (chosen) => {
+    expect((await put(`list.csv?columns=${encodeURIComponent(chosen)}`, 'abc')).status).toBe(422)
   })
 })
