@@ -2,7 +2,6 @@
 
 import { useRouter } from 'next/navigation'
 import { useState, type ReactNode } from 'react'
-import { FormSection } from '@/components/campaigns/form-section'
 import { counted } from '@/components/campaigns/in-words'
 import { Button } from '@/components/ui/button'
 import { EmptyState, Notice } from '@/components/ui/notice'
@@ -147,7 +146,7 @@ export function RecipeEditor({ slug, bands, versions, firstSamples, mostSamples 
           {said.fault ? <Notice tone="alarm">{said.fault}</Notice> : null}
         </div>
       </div>
-      <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
+      <Part title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
         <RecipeHistory
           versions={versions}
           bands={bands}
@@ -155,7 +154,7 @@ export function RecipeEditor({ slug, bands, versions, firstSamples, mostSamples 
           onLook={({ recipe }) => edit(recipe)}
           onAgain={({ version, recipe }) => void save({ again: version, recipe })}
         />
-      </FormSection>
+      </Part>
     </div>
   )
 }
