@@ -1,5 +1,8 @@
+import type { Metadata } from 'next'
 import { ButtonLink } from '@/components/ui/button'
 import { Mark } from '@/components/ui/mark'
+
+export const metadata: Metadata = { title: 'Not here' }
 
 export default function NotFound() {
   return (

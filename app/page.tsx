@@ -9,7 +9,7 @@ import { mayCreateCampaign } from '@/lib/work/campaigns/create-campaign'
 import { listCampaigns } from '@/lib/work/campaigns/list-campaigns'
 import { requireViewer } from '@/lib/work/people/session'
 
-export const metadata: Metadata = { title: 'Your campaigns' }
+export const metadata: Metadata = { title: { absolute: 'Your campaigns · Ringside' } }
 
 export default async function HomePage() {
   const viewer = await requireViewer('/')

@@ -14,8 +14,8 @@ export interface CandidateRow extends CandidateTableRow {
 
 export type ColumnsFor = 'lead' | 'grader' | 'viewer'
 
-/** In the order of arrival; its column is not shown, as the number means nothing outside. */
-export const CANDIDATE_SORT: TableSort = { id: 'id', descending: false }
+/** By name: the order of arrival is that in which uploads happened to end. */
+export const CANDIDATE_SORT: TableSort = { id: 'name', descending: false }
 
 /** A state filter's word for what a grader may not see yet. */
 export const UNGRADED = 'not graded by me'

@@ -22,7 +22,7 @@ export function candidateQuery(role: ColumnsFor, search: URLSearchParams, pageSi
   const states = chosen.filter((state) => state !== UNGRADED) as CandidateState[]
   return {
     filter: { name: filters.name?.trim(), states, withheld: chosen.includes(UNGRADED) },
-    order: ORDERS[sort[0].id] ?? 'id',
+    order: ORDERS[sort[0].id] ?? 'name',
     descending: sort[0].descending,
     page,
     pageSize,

@@ -39,7 +39,7 @@ it('asks the server for another order instead of sorting the page it has', async
   const user = userEvent.setup()
   show('lead', [row(2), row(1)], 250)
   await user.click(within(screen.getByRole('columnheader', { name: 'Candidate' })).getByRole('button'))
-  expect(replace).toHaveBeenCalledWith('/campaigns/north/candidates?sort=name', { scroll: false })
+  expect(replace).toHaveBeenCalledWith('/campaigns/north/candidates?sort=-name', { scroll: false })
   expect(screen.getAllByRole('rowheader').map((cell) => cell.textContent)).toEqual(['candidate 2', 'candidate 1'])
 })
 
@@ -84,5 +84,5 @@ it('turns an address into what the server is asked for', () => {
 
 it('does not take an order or a state from the address that the role does not have', () => {
   const query = candidateQuery('viewer', new URLSearchParams('sort=-score&state=not graded by me'), 100)
-  expect(query).toMatchObject({ order: 'id', descending: false, filter: { states: [], withheld: false } })
+  expect(query).toMatchObject({ order: 'name', descending: false, filter: { states: [], withheld: false } })
 })

@@ -1,4 +1,4 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign } from '../schema/campaigns'
 import type { Candidate } from '../schema/intake'
@@ -53,7 +53,7 @@ export interface NamedCandidate {
   name: string
 }
 
-/** The candidates before and after this one in order of delivery. */
+/** The candidates before and after this one by name, as the table of candidates sorts them. */
 export async function findNeighbours(
   db: Kysely<DB>,
   { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
@@ -65,7 +65,10 @@ export async function findNeighbours(
     .where('campaign_id', '=', campaignId)
     .$if(!withCalibration, (query) => query.where('truth', 'is', null))
     .limit(1)
-  const previous = await candidates.where('id', '<', id).orderBy('id', 'desc').executeTakeFirst()
-  const next = await candidates.where('id', '>', id).orderBy('id').executeTakeFirst()
+  const here = sql`(select name, id from candidate where id = ${id})`
+  const before = sql<SqlBool>`(name, id) < ${here}`
+  const after = sql<SqlBool>`(name, id) > ${here}`
+  const previous = await candidates.where(before).orderBy('name', 'desc').orderBy('id', 'desc').executeTakeFirst()
+  const next = await candidates.where(after).orderBy('name').orderBy('id').executeTakeFirst()
   return { previous: previous ?? null, next: next ?? null }
 }

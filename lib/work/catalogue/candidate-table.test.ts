@@ -83,9 +83,9 @@ it('sorts by score and filters calibration for leads, and passes both over for o
   const byScore = { order: 'score', descending: true } as const
   expect(names(await tableFor(scenario.lead, byScore))).toEqual(['high', 'low', 'calibration'])
   expect(names(await tableFor(scenario.graders[0], { ...byScore, descending: false }))).toEqual([
-    'low',
-    'high',
     'calibration',
+    'high',
+    'low',
   ])
   expect(names(await tableFor(scenario.lead, { filter: { calibration: true } }))).toEqual(['calibration'])
   expect(names(await tableFor(scenario.graders[0], { filter: { calibration: true } }))).toHaveLength(3)

@@ -50,7 +50,7 @@ export async function candidateTable(
   const scope = candidateScope(permit)
   const isLead = permit.role === 'lead'
   const filter = isLead ? input.filter : { ...input.filter, calibration: undefined }
-  const order = isLead || !LEAD_ORDERS.includes(input.order) ? input.order : 'id'
+  const order = isLead || !LEAD_ORDERS.includes(input.order) ? input.order : 'name'
   const count = await countCandidateSlice(db, scope, filter)
   const all = await countCandidateSlice(db, scope, {})
   const rows = await listCandidateSlice(db, scope, {

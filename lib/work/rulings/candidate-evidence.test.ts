@@ -4,6 +4,7 @@ import { giveGrade } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
 import { candidateEvidence } from './candidate-evidence'
+import { candidateName } from './candidate-name'
 import { neighboursOf } from './find-neighbours'
 import { listSplitCases } from './list-splits'
 import { ruleOnCandidate } from './rule-on-candidate'
@@ -80,9 +81,12 @@ describe('the evidence of a candidate', () => {
     await db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', known).execute()
     const reads = await permit(reader, 'read')
     await expect(candidateEvidence(db, reads, known)).rejects.toMatchObject({ status: 404 })
-    expect((await neighboursOf(db, reads, id)).next).toEqual({ id: after, name: 'after' })
-    expect((await neighboursOf(db, reads, after)).previous?.id).toBe(id)
-    expect((await neighboursOf(db, leadReads, id)).next).toEqual({ id: known, name: 'known' })
+    expect(await candidateName(db, reads, known)).toBeNull()
+    expect(await candidateName(db, leadReads, known)).toBe('known')
+    // By name, whenever they came: after, known, torn.
+    expect(await neighboursOf(db, reads, id)).toEqual({ previous: { id: after, name: 'after' }, next: null })
+    expect(await neighboursOf(db, reads, after)).toEqual({ previous: null, next: { id, name: 'torn' } })
+    expect((await neighboursOf(db, leadReads, id)).previous).toEqual({ id: known, name: 'known' })
   })
 
   it('keeps redshifts, which tell that somebody took it for a lens, until the grader has judged', async () => {

@@ -5,7 +5,7 @@ import type { DB } from '@/db/schema'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 
-/** The candidates before and after this one in order of delivery, for turning pages: only such as the person's lists hold. */
+/** The candidates before and after this one by name, for turning pages: only such as the person's lists hold. */
 export function neighboursOf(
   db: Kysely<DB>,
   permit: CampaignPermit<'read'>,

@@ -1,13 +1,19 @@
-import type { Metadata } from 'next'
 import { notFound } from 'next/navigation'
 import { permitPage } from '@/app/_lib/page-permit'
 import { EvidenceScreen } from '@/components/evidence/evidence-screen'
 import { Problem } from '@/lib/platform/problems/problem'
 import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
 import { neighboursOf } from '@/lib/work/rulings/find-neighbours'
+import { candidateName } from '@/lib/work/rulings/candidate-name'
 import { ruleOnCandidateAction } from './actions'
 
-export const metadata: Metadata = { title: 'Candidate' }
+export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
+  const { slug, id: text } = await params
+  if (!/^\d{1,15}$/.test(text)) return { title: 'Candidate' }
+  const { db, permit } = await permitPage(slug, 'read', `/candidates/${text}`)
+  const name = await candidateName(db, permit, Number(text))
+  return { title: name === null ? 'Not here' : `${name} · ${permit.campaign.name}` }
+}
 
 /** Every member; what others made of a candidate is withheld from a grader who has not graded it. */
 export default async function CandidatePage({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {

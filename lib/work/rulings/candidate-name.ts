@@ -1,0 +1,17 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { findCandidate } from '@/db/queries/candidates'
+import type { DB } from '@/db/schema'
+import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+
+/** For the title of a page; null where the person's lists do not hold the candidate. */
+export async function candidateName(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateId: number,
+): Promise<string | null> {
+  const { campaignId, withCalibration } = candidateScope(permit)
+  const candidate = await findCandidate(db, campaignId, candidateId)
+  return candidate && (candidate.truth === null || withCalibration) ? candidate.name : null
+}
