@@ -62,6 +62,15 @@ const EVIDENCE: CandidateEvidence = {
         note: null,
         geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
       },
+      {
+        key: 'blue',
+        label: 'Blue',
+        url: null,
+        width: 0,
+        height: 0,
+        note: null,
+        geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
+      },
     ],
     geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },
     recipe: null,
@@ -99,6 +108,25 @@ describe('the page of a candidate', () => {
     expect(screen.getByText(/not spectroscopic confirmations/)).toBeVisible()
     expect(screen.getByRole('link', { name: 'SWS0008 →' })).toHaveAttribute('href', '/campaigns/north/candidates/8')
     expect(screen.queryByRole('form')).toBeNull()
+  })
+
+  it('shows the view of a number key, and leaves it alone while somebody types or single keys are off', async () => {
+    const action = vi.fn(async (): Promise<FormState> => ({}))
+    show(JUDGEMENT, action)
+    const user = userEvent.setup()
+    const pressed = (name: string) => screen.getByRole('button', { name }).getAttribute('aria-pressed')
+    await user.keyboard('2')
+    expect(pressed('Show Blue')).toBe('true')
+    await user.keyboard('9')
+    expect(pressed('Show Blue')).toBe('true')
+    await user.type(screen.getByRole('textbox', { name: /Reason/ }), '1')
+    expect(pressed('Show Blue')).toBe('true')
+    await user.click(screen.getByRole('checkbox', { name: 'Single keys' }))
+    await user.keyboard('1')
+    expect(pressed('Show Blue')).toBe('true')
+    await user.click(screen.getByRole('checkbox', { name: 'Single keys' }))
+    await user.keyboard('1')
+    expect(pressed('Show Colour')).toBe('true')
   })
 
   it('withholds state, grades and verdict from a grader who has not graded it, and leads to the bench', () => {

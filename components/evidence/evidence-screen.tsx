@@ -21,9 +21,14 @@ import { Position } from './position'
 import { RulingForm } from './ruling-form'
 import { RulingList, StateHistory } from './ruling-record'
 import { VerdictArithmetic } from './verdict-arithmetic'
+import { useViewKeys } from './use-view-keys'
 import { ViewsTray } from './views-tray'
 
-const EVIDENCE_KEYS = [...LIGHT_KEYS, { keys: ['X'], does: 'hold to blink against the view before' }]
+const EVIDENCE_KEYS = [
+  { keys: ['1', '…', '9'], does: 'view' },
+  ...LIGHT_KEYS,
+  { keys: ['X'], does: 'hold to blink against the view before' },
+]
 
 interface Neighbour {
   id: number
@@ -56,6 +61,9 @@ export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleActio
   const light = useLight(personId, slug)
   useLayoutEffect(() => light.show(evidence.id), [light, evidence.id])
   useLightKeys(keysOn, light, setBlinking)
+  useViewKeys(keysOn, (index) => {
+    if (index < evidence.pictures.views.length) setView(index)
+  })
   const { judgement } = evidence
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-6 px-4 py-5 md:px-8 md:py-6">
@@ -88,7 +96,7 @@ export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleActio
               chosen={view}
               onChoose={setView}
               keys={keysOn}
-              viewKeys={false}
+              viewKeys
               light={light}
               blinking={blinking}
             />
