@@ -3,8 +3,8 @@ import type { RulingChoice } from '@/lib/work/rulings/ruling-input'
 /** What a lead can choose, with its single key. Confirming takes the letters of the grades, setting aside that of 'not a lens'. */
 export const CHOICES: { choice: RulingChoice; key: string; label: string; action: string }[] = [
   { choice: 'confirmed-A', key: 'A', label: 'Confirm as A', action: 'Confirm as A' },
-  { choice: 'confirmed-B', key: 'B', label: 'B', action: 'Confirm as B' },
-  { choice: 'confirmed-C', key: 'C', label: 'C', action: 'Confirm as C' },
+  { choice: 'confirmed-B', key: 'B', label: 'as B', action: 'Confirm as B' },
+  { choice: 'confirmed-C', key: 'C', label: 'as C', action: 'Confirm as C' },
   { choice: 'set-aside', key: 'N', label: 'Set aside', action: 'Set aside' },
   { choice: 'open', key: 'O', label: 'Reopen', action: 'Reopen' },
   { choice: 'by-verdict', key: 'V', label: 'By verdict', action: 'Let the verdict decide' },

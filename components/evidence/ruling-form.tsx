@@ -87,7 +87,7 @@ export function RulingForm({
               className="sr-only"
             />
             {one.label}
-            {keys && !one.label.endsWith(one.key) ? (
+            {keys ? (
               <span aria-hidden="true" className="hidden lg:inline">
                 <KeyCap>{one.key}</KeyCap>
               </span>

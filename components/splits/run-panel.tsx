@@ -62,8 +62,9 @@ export function RunPanel({ run, action }: { run: NewestRun | null; action: RunAc
             <div className="flex flex-col gap-1.5 pt-1">
               <p>
                 {counted(summary.grades, 'grade')} of {counted(summary.graders, 'grader')} on{' '}
-                {counted(summary.candidates, 'candidate')}, rule version {run?.ruleVersion}. Verdicts:{' '}
-                {summary.confirmed} confirmed, {summary.setAside} set aside, {summary.split} split, {summary.open} open.
+                {counted(summary.candidates, 'candidate')}, rule version {run?.ruleVersion}. Verdicts by the grades
+                alone: {summary.confirmed} confirmed, {summary.setAside} set aside, {summary.split} split,{' '}
+                {summary.open} open. Pages count states, which rulings change.
               </p>
               <p>α: {summary.alphaNote} Krippendorff asks for 0.80, and for 0.67 where conclusions are tentative.</p>
               <p>κ: {summary.kappaNote} Its words are those of Landis and Koch (1977).</p>

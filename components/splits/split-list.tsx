@@ -74,12 +74,12 @@ export function SplitList({
                   scroll={false}
                   prefetch={false}
                   aria-current={one.candidateId === chosenId ? 'true' : undefined}
-                  className={`flex min-h-8 items-center justify-between gap-3 px-5 text-small -outline-offset-2 ${
+                  className={`flex min-h-8 flex-wrap items-baseline gap-x-3 px-5 py-1 text-small -outline-offset-2 ${
                     one.candidateId === chosenId ? 'bg-raise shadow-[inset_3px_0_0_var(--lamp)]' : 'hover:bg-raise/60'
                   }`}
                 >
-                  <span className="figures truncate">{one.name}</span>
-                  <span className="flex items-center gap-2 whitespace-nowrap text-note text-mute">
+                  <span className="figures [overflow-wrap:anywhere]">{one.name}</span>
+                  <span className="ml-auto flex flex-wrap items-center gap-x-2 text-note text-mute">
                     {describeOutcome(one)} by {one.by}
                     {one.outcome === 'by verdict' ? <StatePill state={one.state} /> : null}
                   </span>
