@@ -67,7 +67,7 @@ export function SplitCase({
         </header>
         <div className="grid items-start gap-x-6 gap-y-5 xl:grid-cols-[minmax(0,1fr)_18rem]">
           <div className="flex min-w-0 flex-col gap-4">
-            <div className="lg:max-w-[min(100%,calc(100dvh-25.5rem))] lg:min-w-[min(100%,24rem)]">
+            <div className="lg:max-w-[min(100%,calc(100dvh-25.5rem))] lg:min-w-[min(100%,18rem)] xl:min-w-[min(100%,24rem)]">
               <ViewsTray
                 name={evidence.name}
                 pictures={evidence.pictures}
@@ -79,6 +79,8 @@ export function SplitCase({
                 blinking={controls.blinking}
               />
             </div>
+          </div>
+          <div className="flex min-w-0 flex-col gap-5">
             <div className="flex max-w-prose flex-col gap-1.5 text-small text-mute">
               <p>
                 <span className="font-semibold text-text">
@@ -97,8 +99,6 @@ export function SplitCase({
                 </p>
               ) : null}
             </div>
-          </div>
-          <div className="flex min-w-0 flex-col gap-5">
             <section aria-label="Grades" className="flex flex-col gap-2">
               <h3 className="text-small font-semibold text-mute">{gradesInWords(grades)}</h3>
               <GradeList grades={grades} />
