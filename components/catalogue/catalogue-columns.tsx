@@ -139,6 +139,7 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
     filter: 'range',
     sortable: true,
     numeric: true,
+    hidden: true,
     cell: (row) =>
       row.raDeg === null ? (
         none
@@ -156,6 +157,7 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
     filter: 'range',
     sortable: true,
     numeric: true,
+    hidden: true,
     cell: (row) =>
       row.decDeg === null ? (
         none
