@@ -25,6 +25,8 @@ import { useVisibleSeconds } from './use-visible-seconds'
 
 /** A key that bounces, or a second press meant for the candidate before, comes faster than anybody can look. */
 const LEAST_LOOK_MS = 120
+/** Who types on after Enter closed the remark means more words, not a grade. */
+const AFTER_WRITING_MS = 500
 const HINT_MS = 2500
 
 /** Everything the bench does, for whoever draws it. */
@@ -37,6 +39,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const [hint, setHint] = useState<string | null>(null)
   const seen = useRef(new Set<number>())
   const broughtAt = useRef(0)
+  const wroteAt = useRef(-Infinity)
 
   const look = currentLook(session)
   const candidateId = look?.candidate.id ?? null
@@ -89,6 +92,11 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   function grade(letter: GradeLetter): void {
     if (!look || !outbox || performance.now() - broughtAt.current < LEAST_LOOK_MS) return
+    if (performance.now() - wroteAt.current < AFTER_WRITING_MS) {
+      wroteAt.current = performance.now()
+      setHint('The remark is closed: M writes on. Grade keys are heard again in a moment.')
+      return
+    }
     const { candidate, answer: before } = look
     const hasPicture = candidate.views.some(({ url }) => url !== null)
     if (letter !== 'U' && !(hasPicture && seen.current.has(candidate.id))) {
@@ -193,7 +201,10 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     explain,
     setHelpOpen,
     setBlinking,
-    closeRemark: () => setRemarkOpen(false),
+    closeRemark: () => {
+      wroteAt.current = performance.now()
+      setRemarkOpen(false)
+    },
     markSeen: (id: number) => seen.current.add(id),
     toggleTag: (tag: (typeof TAGS)[number]) => dispatch({ type: 'tag toggled', tag }),
     writeRemark: (remark: string) => dispatch({ type: 'remark written', remark }),

@@ -156,6 +156,8 @@ describe('the main path', () => {
           await page.keyboard.press('m')
           await page.keyboard.type(REMARK)
           await page.keyboard.press('Enter')
+          // For half a second letters after a remark are taken for words that came late.
+          await page.waitForTimeout(700)
         }
         await page.keyboard.press(letterFor(name, grader).toLowerCase())
         await expect.poll(() => heading.textContent(), { timeout: 20_000 }).not.toBe(name)
