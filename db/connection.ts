@@ -48,12 +48,3 @@ export async function openMemoryDatabase(): Promise<Kysely<DB>> {
   await migrateToLatest(db)
   return db
 }
-
-function sqliteCode(error: unknown): string {
-  return typeof error === 'object' && error !== null && 'code' in error ? String(error.code) : ''
-}
-
-export function isUniqueViolation(error: unknown): boolean {
-  const code = sqliteCode(error)
-  return code === 'SQLITE_CONSTRAINT_UNIQUE' || code === 'SQLITE_CONSTRAINT_PRIMARYKEY'
-}

@@ -53,12 +53,3 @@ export function TextArea({ label, hint, error, className = '', ...rest }: Labell
     </Frame>
   )
 }
-
-export function SelectField({ label, hint, error, className = '', ...rest }: Labelled & ComponentProps<'select'>) {
-  const id = useId()
-  return (
-    <Frame id={id} label={label} hint={hint} error={error}>
-      <select id={id} className={`${CONTROL} ${className}`} {...describe(id, hint, error)} {...rest} />
-    </Frame>
-  )
-}

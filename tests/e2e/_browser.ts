@@ -18,14 +18,6 @@ export function launchBrowser(): Promise<Browser> {
   })
 }
 
-export async function signIn(page: Page, url: string, email: string, password: string): Promise<void> {
-  await page.goto(`${url}/signin`)
-  await page.getByLabel('E-mail').fill(email)
-  await page.getByLabel('Password').fill(password)
-  await page.keyboard.press('Enter')
-  await page.waitForURL((address) => address.pathname !== '/signin')
-}
-
 /** WCAG 2.2 AA as far as axe can see it. */
 export async function expectAccessible(page: Page): Promise<void> {
   const { violations } = await new AxeBuilder({ page })
