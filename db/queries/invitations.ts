@@ -33,6 +33,16 @@ export async function insertInvitation(
   return row.id
 }
 
+/** The invitations of a campaign that could still be accepted, to be taken back. */
+function withdrawOpen(db: Kysely<DB>, campaignId: number, now: string) {
+  return db
+    .updateTable('invitation')
+    .set({ withdrawn_at: now })
+    .where('campaign_id', '=', campaignId)
+    .where('accepted_at', 'is', null)
+    .where('withdrawn_at', 'is', null)
+}
+
 /** Takes back every open invitation of this address to this campaign: only the newest link works. */
 export async function withdrawInvitations(
   db: Kysely<DB>,
@@ -40,14 +50,7 @@ export async function withdrawInvitations(
   email: string,
   now: string,
 ): Promise<number> {
-  const result = await db
-    .updateTable('invitation')
-    .set({ withdrawn_at: now })
-    .where('campaign_id', '=', campaignId)
-    .where('email', '=', email)
-    .where('accepted_at', 'is', null)
-    .where('withdrawn_at', 'is', null)
-    .executeTakeFirst()
+  const result = await withdrawOpen(db, campaignId, now).where('email', '=', email).executeTakeFirst()
   return Number(result.numUpdatedRows)
 }
 
@@ -58,14 +61,7 @@ export async function withdrawInvitationsBy(
   invitedBy: number,
   now: string,
 ): Promise<number> {
-  const result = await db
-    .updateTable('invitation')
-    .set({ withdrawn_at: now })
-    .where('campaign_id', '=', campaignId)
-    .where('invited_by', '=', invitedBy)
-    .where('accepted_at', 'is', null)
-    .where('withdrawn_at', 'is', null)
-    .executeTakeFirst()
+  const result = await withdrawOpen(db, campaignId, now).where('invited_by', '=', invitedBy).executeTakeFirst()
   return Number(result.numUpdatedRows)
 }
 

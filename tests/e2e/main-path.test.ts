@@ -60,6 +60,8 @@ describe('the main path', () => {
   it('offers a first visitor to make the administrator with the code that the server printed', async () => {
     await lead.goto(server.url)
     await lead.waitForURL('**/welcome')
+    // The first request of a cold server: what is typed before the page's script runs may be lost.
+    await lead.waitForLoadState('networkidle')
     await expectAccessible(lead)
     await lead.getByLabel('One-time code').fill('WRONG-CODE')
     await lead.getByLabel('Your name').fill('avocet')
@@ -76,7 +78,7 @@ describe('the main path', () => {
   })
 
   it('lets the lead create a campaign by form, and keeps what was typed when something is wrong', async () => {
-    await lead.goto(`${server.url}/campaigns/new`)
+    await lead.goto(`${server.url}/campaigns/new`, { waitUntil: 'networkidle' })
     await lead.getByLabel('Name of the campaign').fill('Marsh test')
     await lead.getByLabel('Survey').fill('Saltmarsh Wide Survey')
     await lead.getByLabel('Acronym').fill('sws')
@@ -101,7 +103,7 @@ describe('the main path', () => {
       const letter = lead.getByRole('listitem').filter({ hasText: `${name}@saltmarsh.test` })
       const link = await letter.locator('a[href*="/invitation/"]').first().getAttribute('href')
       const page = await newPage()
-      await page.goto(link!)
+      await page.goto(link!, { waitUntil: 'networkidle' })
       await page.getByLabel('Your name').fill(name)
       await page.getByLabel('Password', { exact: true }).fill(PASSWORD)
       await page.getByRole('button', { name: 'Join the campaign' }).click()
