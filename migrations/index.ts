@@ -4,6 +4,7 @@ import * as archivesAndBatches from './002-archives-and-batches'
 import * as judgementShown from './004-judgement-shown'
 import * as invitationMail from './005-invitation-mail'
 import * as looksAsked from './006-looks-asked'
+import * as reliability from './007-reliability'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -12,4 +13,5 @@ export const migrations: Record<string, Migration> = {
   '004-judgement-shown': judgementShown,
   '005-invitation-mail': invitationMail,
   '006-looks-asked': looksAsked,
+  '007-reliability': reliability,
 }

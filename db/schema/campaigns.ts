@@ -38,14 +38,21 @@ export interface MeanParameters {
   splitSpread: number
 }
 
+/** Error rates of the sequential test; see lib/science/agreement/sequential-test.ts. */
+export interface ReliabilityParameters {
+  falseConfirmed: number
+  missedLens: number
+}
+
 export interface RuleTable {
   id: Generated<number>
   campaign_id: number
   version: number
-  method: 'mean'
+  method: 'mean' | 'reliability'
+  /** Of the reliability method: the most looks. */
   grades_wanted: number
   least_grades: number
-  parameters: Json<MeanParameters>
+  parameters: Json<MeanParameters | ReliabilityParameters>
   created_by: number
   created_at: IsoTime
 }

@@ -21,6 +21,20 @@ export interface RunSummary {
   kappaNote: string | null
 }
 
+/** The reliability model of a run: everything that its verdicts, the live estimates and the explanations need. */
+export interface RunModel {
+  /** share of lenses among the candidates */
+  lensShare: number
+  iterations: number
+  converged: boolean
+  logLikelihood: number
+  /** In order of person. Rates are those of the grades A, B, C, N, and sum to 1. */
+  graders: { personId: number; grades: number; calibrationGrades: number; lens: number[]; notLens: number[] }[]
+  /** Rates of somebody of whom nothing is known yet. */
+  newcomer: { lens: number[]; notLens: number[] }
+  leftOut: number[]
+}
+
 export interface RunTable {
   id: Generated<number>
   campaign_id: number
@@ -30,7 +44,11 @@ export interface RunTable {
   /** What the run read: grades and candidates up to these rows. With the rule they are its whole input. */
   newest_grade_id: number
   newest_candidate_id: number
+  /** The newest decision on leaving graders out that it read; 0 for none. */
+  newest_left_out_id: Generated<number>
   summary: Json<RunSummary>
+  /** Of the reliability method: what was fitted. */
+  model: Json<RunModel> | null
   /** null when it started by itself. */
   started_by: number | null
   created_at: IsoTime
@@ -50,6 +68,32 @@ export interface VerdictTable {
   reason: string
 }
 export type Verdict = Selectable<VerdictTable>
+
+/** A row a candidate under the reliability method; not history, made again by each run and kept with each grade. */
+export interface EstimateTable {
+  candidate_id: number
+  run_id: number
+  newest_grade_id: number
+  grades: number
+  cannot_judge: number
+  /** sum of the grades' weights, natural log of the odds */
+  evidence: number
+  probability: number
+  outcome: CandidateState
+}
+export type Estimate = Selectable<EstimateTable>
+
+/** Whether a person's grades count from then on; the newest row of a person holds, without one they count. */
+export interface LeftOutTable {
+  id: Generated<number>
+  campaign_id: number
+  person_id: number
+  left_out: 0 | 1
+  reason: string
+  decided_by: number
+  created_at: IsoTime
+}
+export type LeftOut = Selectable<LeftOutTable>
 
 export type RulingOutcome = 'confirmed' | 'set aside' | 'open' | 'by verdict'
 

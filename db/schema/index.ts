@@ -1,6 +1,7 @@
 import type { CampaignTable, MembershipTable, RecipeTable, RuleTable } from './campaigns'
 import type { DesignationTable, EntryTable } from './catalogue'
-import type { RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
+import type { EstimateTable, LeftOutTable, RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
+import type { AskedLookTable, MentionTable, MessageTable } from './discussion'
 import type { GradeTable, JudgementShownTable, LeaseTable } from './grading'
 import type {
   BatchTable,
@@ -35,6 +36,11 @@ export interface DB {
   judgement_shown: JudgementShownTable
   run: RunTable
   verdict: VerdictTable
+  estimate: EstimateTable
+  left_out: LeftOutTable
+  asked_look: AskedLookTable
+  message: MessageTable
+  mention: MentionTable
   ruling: RulingTable
   designation: DesignationTable
   entry: EntryTable

@@ -90,6 +90,10 @@ export interface CandidateTable {
   grades_given: Generated<number>
   /** Looks that a lead has asked for by reopening it; counts where it is above what the rule wants. */
   looks_asked: Generated<number>
+  /** 1 when the estimate has decided, so that no more looks are wanted. */
+  settled: Generated<0 | 1>
+  /** What one more look would tell, in bits; the queue of the reliability method goes by it. */
+  look_value: Generated<number>
   state: Generated<CandidateState>
   state_cause: StateCause | null
   state_cause_id: number | null

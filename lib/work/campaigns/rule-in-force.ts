@@ -2,7 +2,7 @@ import 'server-only'
 import type { Kysely } from 'kysely'
 import { requireRule } from '@/db/queries/campaigns'
 import type { DB } from '@/db/schema'
-import type { Rule } from '@/db/schema/campaigns'
+import type { MeanParameters, Rule } from '@/db/schema/campaigns'
 import { fromJson } from '@/db/schema/values'
 import type { MeanRule } from '@/lib/science/agreement/mean-rule'
 
@@ -17,7 +17,7 @@ export function ruleOf(row: Rule): RuleInForce {
     version: row.version,
     gradesWanted: row.grades_wanted,
     leastGrades: row.least_grades,
-    ...fromJson(row.parameters),
+    ...(fromJson(row.parameters) as MeanParameters),
   }
 }
 
