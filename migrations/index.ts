@@ -5,6 +5,7 @@ import * as judgementShown from './004-judgement-shown'
 import * as invitationMail from './005-invitation-mail'
 import * as looksAsked from './006-looks-asked'
 import * as reliability from './007-reliability'
+import * as jobHolder from './008-job-holder'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -14,4 +15,5 @@ export const migrations: Record<string, Migration> = {
   '005-invitation-mail': invitationMail,
   '006-looks-asked': looksAsked,
   '007-reliability': reliability,
+  '008-job-holder': jobHolder,
 }

@@ -24,6 +24,7 @@ export async function insertJob(db: Kysely<DB>, job: NewJob): Promise<boolean> {
       payload: toJson(job.payload),
       run_after: job.runAfter,
       lease_until: null,
+      holder: null,
       error: null,
       created_at: job.now,
       updated_at: job.now,
@@ -39,12 +40,12 @@ export async function insertJob(db: Kysely<DB>, job: NewJob): Promise<boolean> {
  */
 export async function claimJob(
   db: Kysely<DB>,
-  claim: { kinds: readonly string[]; now: string; leaseUntil: string },
+  claim: { kinds: readonly string[]; now: string; leaseUntil: string; holder?: string | null },
 ): Promise<Job | null> {
-  const { kinds, now, leaseUntil } = claim
+  const { kinds, now, leaseUntil, holder = null } = claim
   const claimed = await db
     .updateTable('job')
-    .set({ state: 'running', lease_until: leaseUntil, attempts: sql`attempts + 1`, updated_at: now })
+    .set({ state: 'running', lease_until: leaseUntil, holder, attempts: sql`attempts + 1`, updated_at: now })
     .where('id', '=', (query) =>
       query
         .selectFrom('job')
@@ -122,6 +123,29 @@ export async function giveBackJob(db: Kysely<DB>, claim: Claim, now: string): Pr
   await heldBy(db, claim)
     .set({ state: 'queued', attempts: 0, unique_key: null, lease_until: null, run_after: now, updated_at: now })
     .execute()
+}
+
+/** Who has jobs in hand, as far as they gave a name. */
+export async function listJobHolders(db: Kysely<DB>): Promise<string[]> {
+  const rows = await db
+    .selectFrom('job')
+    .select('holder')
+    .distinct()
+    .where('state', '=', 'running')
+    .where('holder', 'is not', null)
+    .execute()
+  return rows.flatMap(({ holder }) => holder ?? [])
+}
+
+/** Puts back what a holder that died had in hand, the attempt counted. Returns how many jobs. */
+export async function freeJobsOf(db: Kysely<DB>, holder: string, now: string): Promise<number> {
+  const result = await db
+    .updateTable('job')
+    .set({ state: 'queued', unique_key: null, lease_until: null, run_after: now, updated_at: now })
+    .where('state', '=', 'running')
+    .where('holder', '=', holder)
+    .executeTakeFirst()
+  return Number(result.numUpdatedRows)
 }
 
 export async function countUnfinishedJobs(db: Kysely<DB>, campaignId: number, kind?: string): Promise<number> {

@@ -18,6 +18,8 @@ export interface JobTable {
   state: Generated<JobState>
   run_after: IsoTime
   lease_until: IsoTime | null
+  /** The process that took it last. */
+  holder: string | null
   attempts: Generated<number>
   done: Generated<number>
   total: Generated<number>

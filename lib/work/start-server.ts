@@ -1,7 +1,10 @@
 import 'server-only'
+import path from 'node:path'
 import { config } from '@/lib/platform/config/config'
 import { database } from '@/lib/platform/database'
 import { startJobLoop } from '@/lib/platform/jobs/run-jobs'
+import { isAlive, showLife } from '@/lib/platform/jobs/sign-of-life'
+import { takeOverFromDead } from '@/lib/platform/jobs/take-over-jobs'
 import { log } from '@/lib/platform/log'
 import { blobs } from '@/lib/platform/storage/blobs'
 import { jobLoops } from './job-handlers'
@@ -24,7 +27,11 @@ export async function startServer(): Promise<void> {
   if (code) console.log(`First visit: open ${config().siteUrl}/welcome and enter the one-time code ${code}`)
   const swept = await blobs().sweepTemporary(new Date(Date.now() - DAY_MS))
   if (swept > 0) log.info({ swept }, 'half-written deliveries removed')
-  const loops = jobLoops.map((handlers) => startJobLoop(db, handlers))
-  process.once('SIGTERM', () => void Promise.all(loops.map((stop) => stop())))
+  const signs = path.join(config().dataFolder, 'processes')
+  const { id: holder, end } = showLife(signs)
+  const freed = await takeOverFromDead(db, (other) => isAlive(signs, other))
+  if (freed > 0) log.info({ freed }, 'jobs of processes that died taken over')
+  const loops = jobLoops.map((handlers) => startJobLoop(db, handlers, { holder }))
+  process.once('SIGTERM', () => void Promise.all(loops.map((stop) => stop())).then(end))
   log.info({ data: config().dataFolder, site: config().siteUrl }, 'ringside started')
 }

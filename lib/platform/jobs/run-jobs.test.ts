@@ -113,7 +113,7 @@ describe('jobs', () => {
   it('are given back when the process stops, so that the next need not wait for the lease', async () => {
     await enqueueJob(db, { kind: 'note' })
     let finish = () => {}
-    const stop = startJobLoop(db, { note: () => new Promise<void>((resolve) => (finish = resolve)) }, 5)
+    const stop = startJobLoop(db, { note: () => new Promise<void>((resolve) => (finish = resolve)) }, { idleMs: 5 })
     await vi.waitFor(async () => expect(await states()).toMatchObject([{ state: 'running' }]))
     await stop()
     expect(await states()).toMatchObject([{ state: 'queued', attempts: 0 }])

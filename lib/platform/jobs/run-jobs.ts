@@ -61,12 +61,22 @@ async function runOne(db: Kysely<DB>, job: Job, handler: JobHandler): Promise<vo
   }
 }
 
+interface LoopOptions {
+  /** The name of this process's sign of life, so that another can tell that it died. */
+  holder?: string | null
+  idleMs?: number
+}
+
 /** Runs due jobs of the kinds that have a handler, one after the other, until none is (or it should stop). Returns how many. */
-export async function runDueJobs(db: Kysely<DB>, handlers: JobHandlers, shouldStop = () => false): Promise<number> {
+export async function runDueJobs(
+  db: Kysely<DB>,
+  handlers: JobHandlers,
+  { holder = null, shouldStop = () => false }: Pick<LoopOptions, 'holder'> & { shouldStop?: () => boolean } = {},
+): Promise<number> {
   const kinds = Object.keys(handlers)
   for (let ran = 0; ; ran++) {
     if (shouldStop()) return ran
-    const job = await claimJob(db, { kinds, now: isoTime(), leaseUntil: isoTime(LEASE_MS) })
+    const job = await claimJob(db, { kinds, now: isoTime(), leaseUntil: isoTime(LEASE_MS), holder })
     if (!job) return ran
     await runOne(db, job, handlers[job.kind])
   }
@@ -77,11 +87,15 @@ export async function runDueJobs(db: Kysely<DB>, handlers: JobHandlers, shouldSt
  * not wait for long ones get a loop of their own. Returns a function that gives back what is in hand, so that the next process
  * need not wait for the leases to run out.
  */
-export function startJobLoop(db: Kysely<DB>, handlers: JobHandlers, idleMs = 400): () => Promise<void> {
+export function startJobLoop(
+  db: Kysely<DB>,
+  handlers: JobHandlers,
+  { holder = null, idleMs = 400 }: LoopOptions = {},
+): () => Promise<void> {
   let stopped = false
   const loop = async () => {
     while (!stopped) {
-      const ran = await runDueJobs(db, handlers, () => stopped).catch((error: unknown) => {
+      const ran = await runDueJobs(db, handlers, { holder, shouldStop: () => stopped }).catch((error: unknown) => {
         log.error({ err: error }, 'job loop')
         return 0
       })
