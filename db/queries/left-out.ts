@@ -1,0 +1,78 @@
+import type { Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { LeftOut } from '../schema/consensus'
+import type { IsoTime } from '../schema/values'
+
+/** The newest decision on the person in the campaign; null before the first, when their grades count. */
+export async function findLeftOut(db: Kysely<DB>, campaignId: number, personId: number): Promise<LeftOut | null> {
+  const row = await db
+    .selectFrom('left_out')
+    .selectAll()
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+export interface LeftOutNow {
+  personId: number
+  reason: string
+  decidedBy: string
+  since: IsoTime
+}
+
+/** Everybody whose grades do not count now, in order of person. */
+export async function listLeftOutNow(db: Kysely<DB>, campaignId: number): Promise<LeftOutNow[]> {
+  return db
+    .selectFrom('left_out')
+    .innerJoin('person', 'person.id', 'left_out.decided_by')
+    .select([
+      'left_out.person_id as personId',
+      'left_out.reason',
+      'person.name as decidedBy',
+      'left_out.created_at as since',
+    ])
+    .where('left_out.campaign_id', '=', campaignId)
+    .where('left_out.left_out', '=', 1)
+    .where(({ not, exists, selectFrom }) =>
+      not(
+        exists(
+          selectFrom('left_out as newer')
+            .select('newer.id')
+            .whereRef('newer.campaign_id', '=', 'left_out.campaign_id')
+            .whereRef('newer.person_id', '=', 'left_out.person_id')
+            .whereRef('newer.id', '>', 'left_out.id'),
+        ),
+      ),
+    )
+    .orderBy('left_out.person_id')
+    .execute()
+}
+
+export async function insertLeftOut(
+  db: Kysely<DB>,
+  row: {
+    campaignId: number
+    personId: number
+    leftOut: boolean
+    reason: string
+    decidedBy: number
+    now: IsoTime
+  },
+): Promise<number> {
+  const { id } = await db
+    .insertInto('left_out')
+    .values({
+      campaign_id: row.campaignId,
+      person_id: row.personId,
+      left_out: row.leftOut ? 1 : 0,
+      reason: row.reason,
+      decided_by: row.decidedBy,
+      created_at: row.now,
+    })
+    .returning('id')
+    .executeTakeFirstOrThrow()
+  return id
+}
