@@ -1,5 +1,7 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
+import { among, inCampaign } from './by-ids'
+import type { WaitingFile } from './intake'
 
 export interface DuplicateFile {
   id: number
@@ -59,4 +61,24 @@ export async function listReplacedBy(db: Kysely<DB>, fileIds: readonly number[])
   if (fileIds.length === 0) return []
   const rows = await db.selectFrom('file').select('id').where('replaced_by', 'in', fileIds).execute()
   return rows.map(({ id }) => id)
+}
+
+/** Files in force that were refused for a band which one of these files had: back to 'stored', to be read again. */
+export async function takeRefusedForBandsOf(
+  db: Kysely<DB>,
+  campaignId: number,
+  fileIds: readonly number[],
+  now: string,
+): Promise<WaitingFile[]> {
+  if (fileIds.length === 0) return []
+  return db
+    .updateTable('file')
+    .set({ fate: 'stored', fault: null, reason: null, duplicate_of: null, updated_at: now })
+    .where('duplicate_of', 'in', among(fileIds))
+    .where(inCampaign('campaign_id', campaignId))
+    .where('fate', '=', 'refused')
+    .where('replaced_by', 'is', null)
+    .where('kind', '=', 'fits')
+    .returning(['id', 'name', 'kind', 'sha256', 'bytes', 'created_at', 'columns'])
+    .execute()
 }

@@ -19,6 +19,8 @@ export interface ImagingTools {
   workers: number
   /** How long after the last delivery an incomplete candidate waits for its other bands. */
   quietMs: number
+  /** How many waiting files are looked at in one go; 3,000 where it is left out. */
+  filesPerPage?: number
 }
 
 /** A campaign's settings as they are while a job runs. */

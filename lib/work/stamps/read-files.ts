@@ -5,6 +5,7 @@ import { isoTime } from '@/lib/platform/clock'
 import { groupBy } from '@/lib/work/intake/group-by'
 import { keepManifest } from '@/lib/work/intake/read-manifest'
 import { campaignWork, type CampaignWork, type ImagingTools } from './campaign-work'
+import { joinRefused } from './join-refused'
 import { matchByHeader, matchPage, type UnmatchedFile } from './match-waiting'
 import { planImaging } from './plan-imaging'
 import { runImaging } from './run-imaging'
@@ -48,7 +49,7 @@ class Reading {
 
   /** Returns whether there was anything to read. */
   async readAll(): Promise<boolean> {
-    const { db } = this.tools
+    const { db, filesPerPage = FILES_PER_PAGE } = this.tools
     this.#total = this.#done + (await countWaitingFiles(db, this.campaignId))
     await this.#tell(0)
     let found = await this.#readManifests()
@@ -57,12 +58,12 @@ class Reading {
     const waiting = new WaitingCandidates(work.bands.length)
     const unmatched: UnmatchedFile[] = []
     for (;;) {
-      const files = await listWaitingFiles(db, this.campaignId, 'fits', this.#afterId, FILES_PER_PAGE)
+      const files = await listWaitingFiles(db, this.campaignId, 'fits', this.#afterId, filesPerPage)
       if (files.length > 0) {
         found = true
         this.#afterId = files[files.length - 1].id
         await this.#readPage(work, files, waiting, unmatched)
-        if (files.length === FILES_PER_PAGE) continue
+        if (files.length === filesPerPage) continue
       }
       if (waiting.files + unmatched.length === 0) {
         if (files.length === 0) return found
@@ -114,7 +115,7 @@ class Reading {
       const ids = part.flatMap((group) => group.map(({ file }) => file.id))
       const readable = await listReadable(this.tools.db, ids)
       const standing = part.filter((group) => group.every(({ file }) => readable.has(file.id)))
-      const planned = await planImaging(this.tools, work, standing)
+      const planned = await planImaging(this.tools, work, await joinRefused(this.tools, work, standing))
       await runImaging(this.tools, work, planned, (files) => this.#tell(files))
     }
   }

@@ -1,4 +1,5 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { setBatchState } from '@/db/queries/batches'
 import { cutoutFits } from '@/tests/_support/cutouts'
 import { delivered } from '@/tests/_support/delivered'
 import { makeIntake, type IntakeScenario } from '@/tests/_support/intake'
@@ -50,6 +51,57 @@ describe('files whose bytes were mixed up', () => {
       expect(await intake.fates()).toEqual({ 'one.fits': 'imaged', 'two.fits': 'imaged' })
     },
   )
+})
+
+describe('files of one candidate whose headers tell other bands than before', () => {
+  const names = ['one', 'two', 'three']
+  const list = `file,candidate\n${names.map((name) => `${name}.fits,SWS1`).join('\n')}\n`
+  const deliver = async (
+    bands: string,
+    seed: number,
+    batchOf: (name: string) => string | undefined = () => undefined,
+  ) => {
+    for (const [index, name] of names.entries()) {
+      await intake.deliver(`${name}.fits`, inBand(seed + index, bands[index]), batchOf(name))
+    }
+  }
+  const settled = async (expected: string[]) => {
+    await intake.read()
+    expect(await bandsOf('SWS1')).toEqual(expected)
+    expect(Object.values(await intake.fates())).not.toContainEqual(expect.stringContaining('refused'))
+  }
+  beforeEach(async () => {
+    await intake.deliver('list.csv', list)
+    await deliver('gri', 1)
+    await settled(['g one.fits 2', 'i three.fits 4', 'r two.fits 3'])
+  })
+
+  it.each([
+    ['two that changed places', 'rgi', ['g two.fits 6', 'i three.fits 7', 'r one.fits 5']],
+    ['three that moved on by one', 'rig', ['g three.fits 7', 'i two.fits 6', 'r one.fits 5']],
+  ])('settle by themselves although each is looked at alone: %s', async (_, bands, expected) => {
+    intake.tools.filesPerPage = 1
+    await deliver(bands, 10)
+    await settled(expected)
+  })
+
+  it('settle when the batch of the last of them goes on', async () => {
+    await deliver('rgi', 10, (name) => (name === 'two' ? 'later' : 'now'))
+    const batch = await intake.db.selectFrom('batch').select('id').where('name', '=', 'later').executeTakeFirstOrThrow()
+    await setBatchState(intake.db, batch.id, 'paused')
+    await intake.read()
+    expect((await intake.fates())['one.fits']).toBe('refused band-taken')
+    await setBatchState(intake.db, batch.id, 'open')
+    await settled(['g two.fits 6', 'i three.fits 7', 'r one.fits 5'])
+  })
+
+  it('stay refused where the file that has the band is not corrected', async () => {
+    await intake.deliver('one.fits', inBand(10, 'r'))
+    await intake.deliver('three.fits', inBand(11, 'i'))
+    await intake.read()
+    expect(await intake.fates()).toMatchObject({ 'one.fits': 'refused band-taken', 'two.fits': 'imaged' })
+    expect(await bandsOf('SWS1')).toEqual(['g one.fits 2', 'i three.fits 6', 'r two.fits 3'])
+  })
 })
 
 describe('the same bytes under another name', () => {
