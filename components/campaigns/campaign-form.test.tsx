@@ -23,6 +23,7 @@ it('sends every field, the untouched ones with their defaults', async () => {
     survey: 'Saltmarsh Wide Survey',
     acronym: 'SWS',
     bands: 'g r i',
+    method: 'mean',
     gradesWanted: '6',
     leastGrades: '4',
     confirmMean: '2',
@@ -57,6 +58,30 @@ it('says in words what the rule does as its numbers are typed', async () => {
   expect(screen.getByText(/Fill in all five numbers/)).toBeVisible()
   await userEvent.type(wanted, '3')
   expect(screen.getByText(/^3 people look at each candidate/)).toBeVisible()
+})
+
+it('sends the numbers of the chosen method only, and keeps those of the other meanwhile', async () => {
+  const action = vi.fn<FormAction>().mockResolvedValue({})
+  render(<CampaignForm action={action} />)
+  await fillIn()
+  await userEvent.type(screen.getByLabelText('Grades wanted'), '{backspace}7')
+  await userEvent.click(screen.getByRole('radio', { name: /^Reliability of the graders/ }))
+  // Wald: (1 - 0.05) / 0.001 = 950 and (1 - 0.001) / 0.05 = 20.
+  expect(screen.getByText(/^At most 10 people look/)).toHaveTextContent(
+    /multiply the odds of a lens by 950, set aside when they divide them by 20/,
+  )
+  await send()
+  await vi.waitFor(() => expect(action).toHaveBeenCalled())
+  expect(Object.fromEntries(action.mock.calls[0][1])).toMatchObject({
+    method: 'reliability',
+    gradesWanted: '10',
+    leastGrades: '2',
+    falseConfirmed: '0.001',
+    missedLens: '0.05',
+  })
+  expect(action.mock.calls[0][1].has('confirmMean')).toBe(false)
+  await userEvent.click(screen.getByRole('radio', { name: /^Mean of the grades/ }))
+  expect(screen.getByLabelText('Grades wanted')).toHaveValue('7')
 })
 
 it('asks about bands that stand the wrong way round, and is quiet about others', async () => {

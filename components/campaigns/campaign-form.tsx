@@ -76,7 +76,7 @@ export function CampaignForm({ action }: { action: FormAction }) {
         title="The rule"
         about="How the grades of a candidate decide it. You can change it later: every version is kept, and a lead’s ruling always stands above it."
       >
-        <RuleFields rule={DEFAULT_MEAN_RULE} errors={errors} />
+        <RuleFields rule={{ method: 'mean', ...DEFAULT_MEAN_RULE }} errors={errors} />
       </FormSection>
       <details className="group border-t border-line pt-6" open={errors?.namePattern ? true : undefined}>
         <summary className="min-h-6 w-fit text-body font-semibold">More: how files are named</summary>

@@ -3,11 +3,11 @@
 import { FormNote } from '@/components/people/form-note'
 import { useKeptForm, type FormAction } from '@/components/people/use-kept-form'
 import { Button } from '@/components/ui/button'
-import type { MeanRule } from '@/lib/science/agreement/mean-rule'
+import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { NamePatternField } from './name-pattern-field'
 import { RuleFields } from './rule-fields'
 
-export function RuleForm({ rule, action }: { rule: MeanRule & { version: number }; action: FormAction }) {
+export function RuleForm({ rule, action }: { rule: RuleInput & { version: number }; action: FormAction }) {
   const { state, pending, formProps } = useKeptForm(action)
   return (
     <form {...formProps} className="flex flex-col gap-5" aria-label="Rule">

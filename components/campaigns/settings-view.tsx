@@ -41,7 +41,7 @@ export function SettingsView({
               open, split, confirmed and set aside. Rulings stand above it and grades are never touched.
             </p>
             <p className="mt-2">
-              With more grades wanted, candidates come back to the bench of people who have not seen them.
+              With more looks wanted, candidates come back to the bench of people who have not seen them.
             </p>
           </>
         }

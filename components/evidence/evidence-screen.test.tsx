@@ -7,7 +7,16 @@ import { EvidenceScreen } from './evidence-screen'
 import { arithmeticInWords, thresholdsInWords } from './verdict-arithmetic'
 
 const AT = '2026-12-01T12:00:00.000Z'
-const RULE = { id: 1, version: 2, gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 1 }
+const RULE = {
+  method: 'mean' as const,
+  id: 1,
+  version: 2,
+  gradesWanted: 4,
+  leastGrades: 3,
+  confirmMean: 2,
+  setAsideMean: 1,
+  splitSpread: 1,
+}
 const GRADE = { own: false, occasion: 'first' as const, tags: [], remark: null, seconds: null, givenAt: AT }
 const GRADES = [
   { ...GRADE, id: 1, by: 'G02', grade: 'A' as const },
@@ -22,6 +31,7 @@ const VERDICT = {
   cannotJudge: 0,
   mean: 7 / 3,
   spread: Math.SQRT2 / 3,
+  probability: null,
   reason: 'Confirmed: 3 grades with mean 2.33, at or above 2.00, and spread 0.47, within 1.00.',
   rule: RULE,
   at: AT,

@@ -6,7 +6,7 @@ const percent = (points: number) => `${(Math.min(3, Math.max(0, points)) / 3) * 
 /** The mean of the grades with their spread on the line from N to A, and where the rule decides. */
 export function MeanScale({ verdict }: { verdict: EvidenceVerdict }) {
   const { mean, spread, rule } = verdict
-  if (mean === null || spread === null) return null
+  if (mean === null || spread === null || rule.method !== 'mean') return null
   const low = Math.max(0, mean - spread)
   const high = Math.min(3, mean + spread)
   return (

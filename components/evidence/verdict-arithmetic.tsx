@@ -22,6 +22,13 @@ export function arithmeticInWords(verdict: EvidenceVerdict, grades: readonly Pic
 }
 
 export function thresholdsInWords({ rule }: EvidenceVerdict): string {
+  if (rule.method === 'reliability') {
+    return (
+      `The rule (version ${rule.version}) weighs each grade by what its grader’s grades are worth and decides from ` +
+      `${counted(rule.leastGrades, 'grade')} on, after at most ${counted(rule.mostLooks, 'look')}: ` +
+      `${rule.falseConfirmed} of what is no lens may be confirmed, ${rule.missedLens} of lenses set aside.`
+    )
+  }
   return (
     `The rule (version ${rule.version}) decides from ${counted(rule.leastGrades, 'grade')} on: it confirms at a mean of ` +
     `${rule.confirmMean.toFixed(2)} or above, sets aside at ${rule.setAsideMean.toFixed(2)} or below, and calls a split where ` +

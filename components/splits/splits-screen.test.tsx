@@ -28,7 +28,16 @@ const view = (key: string, label: string) => ({
   geometry,
 })
 const votes = { A: 2, B: 0, C: 0, N: 1, U: 0 }
-const RULE = { id: 1, version: 1, gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 0.9 }
+const RULE = {
+  method: 'mean' as const,
+  id: 1,
+  version: 1,
+  gradesWanted: 4,
+  leastGrades: 3,
+  confirmMean: 2,
+  setAsideMean: 1,
+  splitSpread: 0.9,
+}
 const AT = '2026-12-01T12:00:00.000Z'
 
 function judgement(more: Partial<Judgement> = {}): Judgement {
@@ -72,6 +81,7 @@ function judgement(more: Partial<Judgement> = {}): Judgement {
       cannotJudge: 0,
       mean: 2,
       spread: Math.SQRT2,
+      probability: null,
       reason: '',
       rule: RULE,
       at: AT,

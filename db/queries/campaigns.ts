@@ -1,6 +1,6 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
-import type { Campaign, MeanParameters, RecipeRow, Rule } from '../schema/campaigns'
+import type { Campaign, MeanParameters, RecipeRow, ReliabilityParameters, Rule } from '../schema/campaigns'
 import type { Role } from '../schema/people'
 import { toJson } from '../schema/values'
 import { lookSums } from './overview'
@@ -118,9 +118,10 @@ export async function insertRule(
   rule: {
     campaignId: number
     version: number
+    method: Rule['method']
     gradesWanted: number
     leastGrades: number
-    parameters: MeanParameters
+    parameters: MeanParameters | ReliabilityParameters
     createdBy: number
     now: string
   },
@@ -130,7 +131,7 @@ export async function insertRule(
     .values({
       campaign_id: rule.campaignId,
       version: rule.version,
-      method: 'mean',
+      method: rule.method,
       grades_wanted: rule.gradesWanted,
       least_grades: rule.leastGrades,
       parameters: toJson(rule.parameters),

@@ -116,6 +116,8 @@ export interface VerdictWithRule {
   cannotJudge: number
   mean: number | null
   spread: number | null
+  /** of a lens, by the reliability method */
+  probability: number | null
   reason: string
   at: IsoTime
   rule: Rule
@@ -135,19 +137,21 @@ export async function listVerdictsOf(db: Kysely<DB>, candidateId: number): Promi
       'verdict.cannot_judge as cannotJudge',
       'verdict.mean',
       'verdict.spread',
+      'verdict.probability',
       'verdict.reason',
       'run.created_at as at',
     ])
     .where('verdict.candidate_id', '=', candidateId)
     .orderBy('verdict.id')
     .execute()
-  return rows.map(({ verdictId, outcome, grades, cannotJudge, mean, spread, reason, at, ...rule }) => ({
+  return rows.map(({ verdictId, outcome, grades, cannotJudge, mean, spread, probability, reason, at, ...rule }) => ({
     id: verdictId,
     outcome,
     grades,
     cannotJudge,
     mean,
     spread,
+    probability,
     reason,
     at,
     rule,

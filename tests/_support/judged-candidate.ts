@@ -53,6 +53,7 @@ export async function addJudgedCandidate(scenario: Scenario, name: string, judge
   const id = await addImagedCandidate(db, campaign, name, judged.position)
   await giveGrades(scenario, id, judged)
   const rule = await ruleInForce(db, campaign.id)
+  if (rule.method !== 'mean') throw new Error('A judged candidate is judged by the mean method.')
   const answers = [...judged.grades]
     .filter((letter) => letter !== ' ')
     .map((grade) => ({ grade: grade as GradeLetter }))

@@ -2,8 +2,9 @@ import path from 'node:path'
 import { openDatabase } from '@/db/connection'
 import { migrateToLatest } from '@/db/migrator'
 import { insertPerson } from '@/db/queries/people'
-import { CampaignInput, RuleInput } from '@/lib/work/campaigns/campaign-input'
+import { CampaignInput } from '@/lib/work/campaigns/campaign-input'
 import { createCampaign } from '@/lib/work/campaigns/create-campaign'
+import { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { hashPassword } from '@/lib/work/people/passwords'
 
 /** A site with one lead and one campaign of bands g, r, i in a data folder, and what has come of its intake. */

@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import { DEFAULT_MEAN_RULE } from '@/lib/science/agreement/mean-rule'
-import { CampaignInput, NamePattern, parseCampaignForm, RuleInput } from './campaign-input'
+import { DEFAULT_RELIABILITY_RULE } from '@/lib/science/agreement/reliability-rule'
+import { CampaignInput, NamePattern, parseCampaignForm } from './campaign-input'
+import { RuleInput } from './rule-input'
 
 const FIELDS = { name: 'North field', survey: 'Saltmarsh Wide Survey', acronym: 'SWS', bands: 'g r i' }
 
@@ -16,11 +18,11 @@ const faults = (parse: () => unknown): Record<string, string> => {
 
 describe('the rule', () => {
   it('takes the defaults where nothing is said', () => {
-    expect(RuleInput.parse({})).toEqual(DEFAULT_MEAN_RULE)
+    expect(RuleInput.parse({})).toEqual({ method: 'mean', ...DEFAULT_MEAN_RULE })
   })
 
   it('reads a comma as a decimal point', () => {
-    expect(RuleInput.parse({ confirmMean: '2,25' }).confirmMean).toBe(2.25)
+    expect(RuleInput.parse({ confirmMean: '2,25' })).toMatchObject({ confirmMean: 2.25 })
   })
 
   it('does not take an empty field for 0', () => {
@@ -46,9 +48,47 @@ describe('the rule', () => {
   })
 })
 
+describe('the rule of the reliability method', () => {
+  const METHOD = { method: 'reliability' }
+
+  it('takes the defaults where nothing else is said', () => {
+    const { falseConfirmed, missedLens, leastGrades, mostLooks } = DEFAULT_RELIABILITY_RULE
+    expect(RuleInput.parse(METHOD)).toEqual({
+      ...METHOD,
+      gradesWanted: mostLooks,
+      leastGrades,
+      falseConfirmed,
+      missedLens,
+    })
+  })
+
+  it('leaves out what belongs to the other method', () => {
+    expect(Object.keys(RuleInput.parse({ ...METHOD, confirmMean: '2' }))).not.toContain('confirmMean')
+  })
+
+  it.each([
+    [{ gradesWanted: '0' }, 'gradesWanted'],
+    [{ gradesWanted: '51' }, 'gradesWanted'],
+    [{ gradesWanted: '3', leastGrades: '4' }, 'leastGrades'],
+    [{ falseConfirmed: '0' }, 'falseConfirmed'],
+    [{ falseConfirmed: '' }, 'falseConfirmed'],
+    [{ missedLens: '1' }, 'missedLens'],
+    [{ missedLens: 'few' }, 'missedLens'],
+    [{ falseConfirmed: '0.6', missedLens: '0,4' }, 'missedLens'],
+  ])('refuses %j with a sentence at its field', (fields, name) => {
+    expect(Object.keys(faults(() => RuleInput.parse({ ...METHOD, ...fields })))).toEqual([name])
+  })
+
+  it('knows two methods and says which', () => {
+    expect(faults(() => RuleInput.parse({ method: 'median' }))).toEqual({
+      method: 'The method is one of: mean, reliability.',
+    })
+  })
+})
+
 it('takes a spread up to the largest that grades can have, and says which that is', () => {
   // Population standard deviation of one 3 and one 0: sqrt(mean of squares - square of mean) = sqrt(4.5 - 2.25).
-  expect(RuleInput.parse({ splitSpread: String(Math.sqrt(9 / 2 - 1.5 ** 2)) }).splitSpread).toBe(1.5)
+  expect(RuleInput.parse({ splitSpread: String(Math.sqrt(9 / 2 - 1.5 ** 2)) })).toMatchObject({ splitSpread: 1.5 })
   expect(faults(() => RuleInput.parse({ splitSpread: '2' }))).toEqual({
     splitSpread:
       'The spread that splits is between 0 and 1.5 points: as many A as N spread by 1.5, and nothing spreads more.',

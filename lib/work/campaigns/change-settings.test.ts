@@ -1,8 +1,8 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { makeScenario, type Scenario } from '@/tests/_support/scenario'
-import { RuleInput } from './campaign-input'
 import { changeNamePattern, changeRule, listRuleVersions } from './change-settings'
 import { ruleInForce } from './rule-in-force'
+import { RuleInput } from './rule-input'
 
 let scenario: Scenario
 beforeEach(async () => {
@@ -18,17 +18,28 @@ it('appends a version, leaves the earlier one as it was, and asks for one consen
   expect(await changeRule(db, await lead(), RuleInput.parse({ confirmMean: '2.2' }))).toEqual({ version: 2 })
   await changeRule(db, await lead(), RuleInput.parse({ confirmMean: '2.4' }))
   const versions = await listRuleVersions(db, await lead())
-  expect(versions.map(({ version, confirmMean }) => [version, confirmMean])).toEqual([
-    [3, 2.4],
-    [2, 2.2],
-    [1, 2],
+  expect(versions).toMatchObject([
+    { version: 3, confirmMean: 2.4 },
+    { version: 2, confirmMean: 2.2 },
+    { version: 1, confirmMean: 2 },
   ])
   expect(versions[0].author).toBe('avocet')
-  expect((await ruleInForce(db, campaign.id)).confirmMean).toBe(2.4)
+  expect(await ruleInForce(db, campaign.id)).toMatchObject({ method: 'mean', confirmMean: 2.4 })
   // The second change finds the first one's run still waiting.
   expect(await jobs()).toEqual([
     { payload: JSON.stringify({ campaignId: campaign.id }), unique_key: `consensus:${campaign.id}` },
   ])
+})
+
+it('changes the method and keeps the rule of the other in its history', async () => {
+  const { db, campaign } = scenario
+  const input = RuleInput.parse({ method: 'reliability', gradesWanted: '8', falseConfirmed: '0.01' })
+  await changeRule(db, await lead(), input)
+  expect(await ruleInForce(db, campaign.id)).toMatchObject({ version: 2, mostLooks: 8, ...input })
+  const [, before] = await listRuleVersions(db, await lead())
+  expect(before).toMatchObject({ version: 1, method: 'mean', confirmMean: 2 })
+  expect(before).not.toHaveProperty('falseConfirmed')
+  await expect(changeRule(db, await lead(), input)).rejects.toMatchObject({ type: 'rule-unchanged' })
 })
 
 it('refuses the rule that is in force already, and asks for no run', async () => {

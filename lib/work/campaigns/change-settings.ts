@@ -9,10 +9,10 @@ import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict } from '@/lib/platform/problems/problem'
 import type { CampaignPermit } from '@/lib/work/people/permission'
-import type { RuleInput } from './campaign-input'
 import { ruleOf, type RuleInForce } from './rule-in-force'
+import { ruleRowOf, type RuleInput } from './rule-input'
 
-export interface RuleVersion extends RuleInForce {
+export type RuleVersion = RuleInForce & {
   author: string
   createdAt: string
 }
@@ -30,24 +30,14 @@ export async function changeRule(
   input: RuleInput,
 ): Promise<{ version: number }> {
   const { campaign, viewer } = permit
-  const { gradesWanted, leastGrades, confirmMean, setAsideMean, splitSpread } = input
-  const parameters = { confirmMean, setAsideMean, splitSpread }
   return db.transaction().execute(async (transaction) => {
     const before = ruleOf(await requireRule(transaction, campaign.id))
-    const same = (Object.keys(input) as (keyof RuleInput)[]).every((key) => input[key] === before[key])
-    if (same) throw conflict('rule-unchanged', `This is the rule in force already (version ${before.version}).`)
+    if (isSameRule(before, input))
+      throw conflict('rule-unchanged', `This is the rule in force already (version ${before.version}).`)
     const version = before.version + 1
     const now = isoTime()
     const campaignId = campaign.id
-    await insertRule(transaction, {
-      campaignId,
-      version,
-      gradesWanted,
-      leastGrades,
-      parameters,
-      createdBy: viewer.id,
-      now,
-    })
+    await insertRule(transaction, { campaignId, version, ...ruleRowOf(input), createdBy: viewer.id, now })
     await requestConsensus(transaction, campaignId)
     await recordEvent(transaction, {
       personId: viewer.id,
@@ -57,6 +47,11 @@ export async function changeRule(
     })
     return { version }
   })
+}
+
+function isSameRule(before: RuleInForce, input: RuleInput): boolean {
+  const known: Record<string, unknown> = { ...before }
+  return Object.entries(input).every(([name, value]) => known[name] === value)
 }
 
 /** For files that arrive from now on and for those that could not be matched so far; what was matched already stays. */

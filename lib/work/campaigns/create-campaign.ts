@@ -10,7 +10,8 @@ import { isoTime } from '@/lib/platform/clock'
 import { forbidden, signInNeeded } from '@/lib/platform/problems/problem'
 import { canonicalRecipe, defaultRecipe } from '@/lib/science/imaging/recipe'
 import type { Viewer } from '@/lib/work/people/viewer'
-import type { CampaignInput, RuleInput } from './campaign-input'
+import type { CampaignInput } from './campaign-input'
+import { ruleRowOf, type RuleInput } from './rule-input'
 
 /** Administrators, and whoever leads a campaign already. */
 export async function mayCreateCampaign(db: Kysely<DB>, viewer: Viewer): Promise<boolean> {
@@ -49,13 +50,10 @@ export async function createCampaign(
     const now = isoTime()
     const slug = await freeSlug(transaction, input.name)
     const campaign = await insertCampaign(transaction, { ...input, slug, createdBy: viewer.id, now })
-    const { gradesWanted, leastGrades, ...parameters } = rule
     await insertRule(transaction, {
       campaignId: campaign.id,
       version: 1,
-      gradesWanted,
-      leastGrades,
-      parameters,
+      ...ruleRowOf(rule),
       createdBy: viewer.id,
       now,
     })

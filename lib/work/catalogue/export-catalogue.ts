@@ -77,6 +77,14 @@ function votableMeta({ campaign }: CampaignPermit<'read'>, rule: RuleInForce, no
 }
 
 function ruleInWords(rule: RuleInForce): string {
+  if (rule.method === 'reliability') {
+    return (
+      `Rule ${rule.version}, in force at the time of export: by the reliability of the graders (Dawid & Skene 1979) and a sequential ` +
+      `test (Wald 1945); at most ${rule.mostLooks} looks and at least ${rule.leastGrades} grades; share of non-lenses that may be ` +
+      `confirmed ${rule.falseConfirmed}, share of lenses that may be set aside ${rule.missedLens}; split in between; rulings of a ` +
+      'lead stand over it.'
+    )
+  }
   return (
     `Rule ${rule.version}, in force at the time of export: ${rule.gradesWanted} grades wanted and at least ${rule.leastGrades}; ` +
     `grade points A 3, B 2, C 1, N 0; confirmed from a mean of ${rule.confirmMean}, set aside up to ${rule.setAsideMean}, ` +

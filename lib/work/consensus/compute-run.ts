@@ -11,7 +11,8 @@ import {
 import type { DB } from '@/db/schema'
 import type { RunSummary } from '@/db/schema/consensus'
 import { GRADE_POINTS } from '@/lib/science/agreement/grades'
-import { decide, type MeanRule } from '@/lib/science/agreement/mean-rule'
+import { decide } from '@/lib/science/agreement/mean-rule'
+import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { InputDigest } from './input-digest'
 import { measureAgreement } from './measure-agreement'
 
@@ -20,7 +21,7 @@ const PAGE = 500
 
 export interface RunInput {
   campaignId: number
-  rule: MeanRule
+  rule: RuleInForce
   newestGradeId: number
   newestCandidateId: number
 }
@@ -37,7 +38,9 @@ export interface ComputedRun {
  * and verdicts at any later time; `changed` is against the verdicts that the candidates have now. Two queries a page.
  */
 export async function computeRun(db: Kysely<DB>, input: RunInput): Promise<ComputedRun> {
-  const digest = new InputDigest(input.rule)
+  const { rule } = input
+  if (rule.method !== 'mean') throw new RangeError('Only rules of the mean method are computed.')
+  const digest = new InputDigest(rule)
   const counts: Uint16Array[] = []
   const people = new Set<number>()
   const changed: NewVerdict[] = []
@@ -66,7 +69,7 @@ export async function computeRun(db: Kysely<DB>, input: RunInput): Promise<Compu
       counted.push(...given)
       for (const answer of given) people.add(answer.personId)
       counts.push(countPoints(given))
-      const { n, ...decision } = decide(input.rule, given)
+      const { n, ...decision } = decide(rule, given)
       outcomes[decision.outcome] += 1
       totals.grades += n
       totals.cannotJudge += decision.cannotJudge

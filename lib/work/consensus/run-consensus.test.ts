@@ -93,7 +93,14 @@ describe('a consensus run', () => {
     const permit = await scenario.permit(scenario.lead, 'lead')
     const first = await runConsensus(scenario.db, permit)
     const { gradesWanted, leastGrades, ...parameters } = { ...RULE, splitSpread: 1.5 }
-    const rule = { campaignId: scenario.campaign.id, version: 2, gradesWanted, leastGrades, parameters }
+    const rule = {
+      campaignId: scenario.campaign.id,
+      version: 2,
+      method: 'mean' as const,
+      gradesWanted,
+      leastGrades,
+      parameters,
+    }
     await insertRule(scenario.db, { ...rule, createdBy: scenario.lead.id, now: '2026-01-03T00:00:00.000Z' })
     const second = await runConsensus(scenario.db, permit)
     expect(second).toMatchObject({ unchanged: false, ruleVersion: 2 })

@@ -166,6 +166,7 @@ describe('a grade is refused', () => {
     await insertRule(scenario.db, {
       campaignId: campaign.id,
       version: 2,
+      method: 'mean',
       gradesWanted: 1,
       leastGrades: 1,
       parameters: { confirmMean: 2, setAsideMean: 0.5, splitSpread: 1 },
@@ -181,7 +182,14 @@ describe('under a live lease, when a rule lowers the wanted number', () => {
     const { db, campaign, lead, graders } = scenario
     for (const grader of graders.slice(0, 2)) await lendNext(db, await scenario.permit(grader, 'grade'), 1)
     const rule = { gradesWanted: 1, leastGrades: 1, parameters: { confirmMean: 2, setAsideMean: 1, splitSpread: 1 } }
-    await insertRule(db, { campaignId: campaign.id, version: 2, ...rule, createdBy: lead.id, now: '2026-03-01' })
+    await insertRule(db, {
+      campaignId: campaign.id,
+      version: 2,
+      method: 'mean',
+      ...rule,
+      createdBy: lead.id,
+      now: '2026-03-01',
+    })
     expect((await give(0, { grade: 'A' })).grade.grade).toBe('A')
     expect(await refusal(give(1, { grade: 'B' }))).toEqual({ status: 409, type: 'candidate-full' })
     expect(await refusal(give(2, { grade: 'B' }))).toEqual({ status: 409, type: 'candidate-full' })

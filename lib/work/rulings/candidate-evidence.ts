@@ -80,6 +80,8 @@ export interface EvidenceVerdict {
   /** grade points */
   mean: number | null
   spread: number | null
+  /** of a lens, by the reliability method; null by the mean */
+  probability: number | null
   reason: string
   /** The rule of the run that gave the verdict. */
   rule: RuleInForce

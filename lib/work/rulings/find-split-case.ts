@@ -27,7 +27,7 @@ export async function findSplitCase(
   const { verdict, grades } = evidence?.judgement ?? {}
   return {
     evidence,
-    decides: verdict && grades ? whatWouldDecide(verdict.rule, grades) : [],
+    decides: verdict?.rule.method === 'mean' && grades ? whatWouldDecide(verdict.rule, grades) : [],
     missing: asked !== null && wanted === null,
   }
 }

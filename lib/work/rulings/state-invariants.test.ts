@@ -3,7 +3,7 @@ import { sql, type Kysely } from 'kysely'
 import { describe, expect, it } from 'vitest'
 import type { DB } from '@/db/schema'
 import { decide } from '@/lib/science/agreement/mean-rule'
-import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
+import { ruleInForce, type MeanRuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { giveGrade, giveGrades } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
@@ -108,7 +108,7 @@ describe('the state of a candidate', () => {
       }
     }
     await runConsensus(db, await permit(lead, 'lead'))
-    const rule = await ruleInForce(db, campaign.id)
+    const rule = (await ruleInForce(db, campaign.id)) as MeanRuleInForce
     const rows = await db
       .selectFrom('verdict')
       .innerJoin('candidate', 'candidate.id', 'verdict.candidate_id')

@@ -3,8 +3,9 @@
 import { revalidatePath } from 'next/cache'
 import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
-import { NamePatternInput, RuleInput } from '@/lib/work/campaigns/campaign-input'
+import { NamePatternInput } from '@/lib/work/campaigns/campaign-input'
 import { changeNamePattern, changeRule } from '@/lib/work/campaigns/change-settings'
+import { RuleInput } from '@/lib/work/campaigns/rule-input'
 
 export async function changeRuleAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
   try {
