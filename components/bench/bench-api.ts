@@ -11,6 +11,8 @@ export interface GradeBody {
   view: string | null
   seconds: number
   reason: string | null
+  /** The answer to a look that was asked for by name. */
+  asked?: true
   /** Version of the recipe of the pictures that were judged. */
   recipe?: number | null
 }

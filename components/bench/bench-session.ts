@@ -185,7 +185,10 @@ function graded(session: BenchSession, { answer, view, seconds }: BenchAction & 
   const upcoming = session.upcoming.slice(1)
   return {
     ...session,
-    given: [...session.given, { candidate: look.candidate, answer, view, seconds }],
+    given: [
+      ...session.given.filter((old) => old.candidate.id !== candidateId),
+      { candidate: look.candidate, answer, view, seconds },
+    ],
     upcoming,
     drafts,
     counts: { given: session.counts.given + 1, left: Math.max(0, session.counts.left - 1) },
@@ -228,13 +231,19 @@ function drafted(session: BenchSession, change: (draft: Draft) => Draft): BenchS
 
 function refilled(session: BenchSession, action: BenchAction & { type: 'supplied' }): BenchSession {
   const { supplied, waiting, resumed } = action
-  const handled = new Set([...waiting.candidateIds, ...session.given.map(({ candidate }) => candidate.id)])
-  const offered = supplied.candidates.filter(({ id }) => !handled.has(id))
+  const onTheirWay = new Set(waiting.candidateIds)
+  const handled = new Map(session.given.map(({ candidate }) => [candidate.id, candidate.asked?.id]))
+  // A look that is asked for anew comes again, although the candidate was graded in this sitting.
+  const offered = supplied.candidates.filter(
+    ({ id, asked }) => !onTheirWay.has(id) && (!handled.has(id) || (asked && asked.id !== handled.get(id))),
+  )
   const stillOffered = new Set(offered.map(({ id }) => id))
   const kept = session.upcoming.filter(({ id }, index) => stillOffered.has(id) || (index === 0 && !resumed))
   const known = new Set(kept.map(({ id }) => id))
   const fresh = offered.filter(({ id }) => !known.has(id))
-  const upcoming = [...kept, ...fresh]
+  const [asked, others] = [fresh.filter((one) => one.asked), fresh.filter((one) => !one.asked)]
+  // What is under the person's eyes stays there; asked looks come next.
+  const upcoming = [...kept.slice(0, 1), ...asked, ...kept.slice(1), ...others]
   const left = Math.max(upcoming.length, supplied.left - waiting.firsts)
   const changed = session.lookingBack === null && upcoming[0]?.id !== session.upcoming[0]?.id
   return {

@@ -5,6 +5,7 @@ import { LightSection } from '@/components/light/light-section'
 import { useLight, useLightFact } from '@/components/light/use-light'
 import { KeyCap } from '@/components/ui/key-cap'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
+import { AskedLine } from './asked-line'
 import { BenchHeader } from './bench-header'
 import { BenchRest } from './bench-rest'
 import { GradeLadder } from './grade-ladder'
@@ -51,11 +52,14 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
     onBlinkEnd: () => bench.setBlinking(false),
   })
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
+  const asked = look?.candidate.asked
+  const moreAsked = session.upcoming.filter(({ id, asked }) => asked && id !== look?.candidate.id).length
   const spoken = [
     last && session.lookingBack === null
       ? `${last.answer.grade}, ${gradeName(last.answer.grade)}: ${last.candidate.name}.`
       : '',
     look ? `${session.lookingBack === null ? 'Now' : 'Back at'} ${look.candidate.name}.` : '',
+    asked ? `${asked.by} asks for your look.` : '',
   ].join(' ')
 
   return (
@@ -85,6 +89,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
           />
           {look ? (
             <>
+              {asked ? <AskedLine asked={asked} more={moreAsked} /> : null}
               <Stage
                 key={look.candidate.id}
                 candidate={look.candidate}

@@ -86,6 +86,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
         seconds: spent,
         reason,
         recipe: candidate.recipe,
+        ...(candidate.asked ? { asked: true as const } : {}),
       },
     })
   }

@@ -17,7 +17,15 @@ const RULE = {
   setAsideMean: 1,
   splitSpread: 1,
 }
-const GRADE = { own: false, occasion: 'first' as const, tags: [], remark: null, seconds: null, givenAt: AT }
+const GRADE = {
+  own: false,
+  occasion: 'first' as const,
+  informed: false,
+  tags: [],
+  remark: null,
+  seconds: null,
+  givenAt: AT,
+}
 const GRADES = [
   { ...GRADE, id: 1, by: 'G02', grade: 'A' as const },
   { ...GRADE, id: 2, by: 'G03', grade: 'B' as const },

@@ -20,11 +20,13 @@ export async function listCandidatesAmong(
 
 /**
  * The one condition of what a grader may see: of `grade` as `own`, a standing answer of the person, on any occasion, that is a
- * grade and not 'cannot judge'.
+ * grade and not 'cannot judge', where no lead waits for another look of theirs.
  */
 export function isOwnJudgement(personId: number): RawBuilder<SqlBool> {
   return sql<SqlBool>`+own.person_id = ${personId} and own.grade != 'U'
-    and not exists (select 1 from grade newer where newer.replaces = own.id)`
+    and not exists (select 1 from grade newer where newer.replaces = own.id)
+    and not exists (select 1 from asked_look ask where ask.candidate_id = own.candidate_id
+      and ask.person_id = ${personId} and ask.grade_id is null and ask.withdrawn_at is null)`
 }
 
 /** Those of the candidates that the person has judged. */
@@ -70,8 +72,8 @@ export async function findGradeByUid(db: Kysely<DB>, uid: string): Promise<Grade
   return (await db.selectFrom('grade').selectAll().where('uid', '=', uid).executeTakeFirst()) ?? null
 }
 
-/** The person's first grade of a candidate as it stands: the newest of its corrections. */
-export async function findStandingFirstGrade(
+/** The person's answer that counts: the newest, given first, asked for, or corrected since. */
+export async function findStandingAnswer(
   db: Kysely<DB>,
   candidateId: number,
   personId: number,
@@ -80,7 +82,7 @@ export async function findStandingFirstGrade(
     .selectFrom('grade')
     .selectAll()
     .where('candidate_id', '=', candidateId)
-    .where('occasion', '=', 'first')
+    .where('occasion', 'in', ['first', 'asked'])
     .where('person_id', '=', personId)
     .orderBy('id', 'desc')
     .limit(1)

@@ -27,6 +27,18 @@ export async function listRulingsOf(db: Kysely<DB>, candidateId: number): Promis
     .execute()
 }
 
+/** The candidate's newest ruling, unless it handed the candidate back to the verdict. */
+export async function findStandingRuling(db: Kysely<DB>, candidateId: number): Promise<Ruling | null> {
+  const row = await db
+    .selectFrom('candidate')
+    .innerJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+    .selectAll('ruling')
+    .where('candidate.id', '=', candidateId)
+    .where('ruling.outcome', '!=', 'by verdict')
+    .executeTakeFirst()
+  return row ?? null
+}
+
 /** Appends the ruling and makes it the candidate's newest, with the looks that are asked for from now. */
 export async function insertRuling(
   db: Kysely<DB>,

@@ -5,6 +5,7 @@ describe('a grade as it arrives', () => {
   it('is complete with its letter alone', () => {
     expect(GradeInput.parse({ grade: 'A' })).toEqual({
       grade: 'A',
+      asked: false,
       tags: [],
       remark: null,
       view: null,

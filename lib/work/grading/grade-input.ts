@@ -25,6 +25,8 @@ export const GradeInput = z
       )
       .nullish()
       .transform((text) => text || null),
+    /** The answer to a look that a lead asked for by name, as the queue told it. */
+    asked: z.boolean('Say true where this answers an asked look.').default(false),
     view: z
       .string()
       .max(40)

@@ -8,7 +8,8 @@ import type { CampaignPermit } from '@/lib/work/people/permission'
 /**
  * Of which of these candidates the person may see grades, verdict and state. Leads and viewers: of all in the campaign. A
  * grader: of those they have judged themselves, so that nobody is swayed. 'Cannot judge' is no judgement: it reveals nothing,
- * or a look at the others' grades would cost one key. Ids of other campaigns are never in the answer.
+ * or a look at the others' grades would cost one key. While a lead waits for another look of theirs it is withheld again, so that
+ * this look is their own too. Ids of other campaigns are never in the answer.
  */
 export async function revealedTo(
   db: Kysely<DB>,

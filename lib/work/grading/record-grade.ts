@@ -1,12 +1,13 @@
 import 'server-only'
 import { randomUUID } from 'node:crypto'
 import type { Kysely, Transaction } from 'kysely'
+import { setAskAnswered } from '@/db/queries/asked-looks'
 import { requireRecipe } from '@/db/queries/campaigns'
 import {
   countLiveLeases,
   findCandidateToGrade,
   findGradeByUid,
-  findStandingFirstGrade,
+  findStandingAnswer,
   insertGrade,
   isJudgementShown,
   setFirstGradeGiven,
@@ -21,6 +22,7 @@ import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict, invalid, notFound } from '@/lib/platform/problems/problem'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { askAnsweredBy } from './asked-answer'
 import type { GradeInput } from './grade-input'
 
 export interface GivenGrade {
@@ -45,8 +47,8 @@ export interface RecordedGrade {
 const CONSENSUS_DELAY_MS = 2000
 
 /**
- * Records a person's grade of a candidate: the first one, or a correction of it, which is a new row that names the row it
- * replaces. A repeated call changes nothing, told by its id or, without one, by its content.
+ * Records a person's grade of a candidate: the first one, the answer to an asked look, which takes no place of the wanted
+ * number, or a correction of the newest, which is a new row that names the row it replaces. A repeated call changes nothing, told by its id or, without one, by its content.
  *
  * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
  * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
@@ -66,18 +68,21 @@ export async function recordGrade(
     if (!candidate.imaged_at) {
       throw conflict('not-imaged', 'This candidate has no pictures yet, so there is nothing to grade. Try again later.')
     }
-    const standing = await findStandingFirstGrade(transaction, candidateId, viewer.id)
-    const repeat = await isRepeat(transaction, candidateId, viewer.id, input, standing)
-    if (standing && repeat) return { row: standing, replaced: null }
-    if (standing) await assertUnswayed(transaction, permit, candidateId)
+    const standing = await findStandingAnswer(transaction, candidateId, viewer.id)
+    const delivered = await isDelivered(transaction, candidateId, viewer.id, input)
+    if (standing && delivered) return { row: standing, replaced: null }
+    const ask = await askAnsweredBy(transaction, candidateId, viewer.id, { asked: input.asked, standing })
+    const corrected = ask ? null : standing
+    if (corrected && saysTheSame(corrected, input)) return { row: corrected, replaced: null }
+    if (corrected) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
-    if (!standing) await assertRoom(transaction, candidate, viewer.id, rule)
+    if (!corrected && !ask) await assertRoom(transaction, candidate, viewer.id, rule)
     const row = await insertGrade(transaction, {
       uid: input.id ?? randomUUID(),
       campaign_id: campaign.id,
       candidate_id: candidateId,
       person_id: viewer.id,
-      occasion: 'first',
+      occasion: ask ? 'asked' : (corrected?.occasion ?? 'first'),
       grade: input.grade,
       tags: toJson<string[]>(input.tags),
       reason: input.reason,
@@ -85,13 +90,15 @@ export async function recordGrade(
       recipe_id: await recipeSeen(transaction, campaign.id, candidateId, input.recipe),
       view: input.view,
       seconds: input.seconds,
-      replaces: standing?.id ?? null,
+      replaces: corrected?.id ?? null,
       given_at: isoTime(),
     })
-    if (!standing) await setFirstGradeGiven(transaction, candidateId, viewer.id)
-    if (candidate.grades_given + (standing ? 0 : 1) >= rule.leastGrades)
+    const first = !corrected && !ask
+    if (ask) await setAskAnswered(transaction, { id: ask.id, gradeId: row.id, candidateId, personId: viewer.id })
+    if (first) await setFirstGradeGiven(transaction, candidateId, viewer.id)
+    if (ask || candidate.grades_given + (first ? 1 : 0) >= rule.leastGrades)
       await requestConsensus(transaction, campaign.id, CONSENSUS_DELAY_MS)
-    return { row, replaced: standing?.uid ?? null }
+    return { row, replaced: corrected?.uid ?? null }
   })
   return {
     grade: shapeGrade(recorded.row),
@@ -118,19 +125,18 @@ async function recipeSeen(
   return (await findRecipeOfStamps(transaction, candidateId)) ?? (await requireRecipe(transaction, campaignId)).id
 }
 
-/** Whether this id, or else this content, has been recorded as a grade of this person and candidate. */
-async function isRepeat(
+/** Whether a grade with this id has been recorded of this person and candidate. */
+async function isDelivered(
   transaction: Transaction<DB>,
   candidateId: number,
   personId: number,
   input: GradeInput,
-  standing: GradeRow | null,
 ): Promise<boolean> {
   const known = input.id ? await findGradeByUid(transaction, input.id) : null
   if (known && (known.person_id !== personId || known.candidate_id !== candidateId)) {
     throw conflict('grade-id-taken', 'This grade id belongs to another grade. Make a new id for each grade.')
   }
-  return known !== null || (standing !== null && saysTheSame(standing, input))
+  return known !== null
 }
 
 function saysTheSame(standing: GradeRow, input: GradeInput): boolean {

@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { setAsksWithdrawn } from '@/db/queries/asked-looks'
 import { withdrawInvitationsBy } from '@/db/queries/invitations'
 import { countLeads, findMembership, setMembership } from '@/db/queries/people'
 import { deleteLeases } from '@/db/queries/queue'
@@ -23,14 +24,17 @@ async function assertLeadRemains(db: Kysely<DB>, campaignId: number, name: strin
   throw conflict('last-lead', `${name} is the only lead of this campaign. Make somebody else a lead first.`)
 }
 
-/** What a person could do in the campaign ends with their rights: the links they sent, and the candidates on their bench. */
+/** What a person could do in the campaign ends with their rights: the links they sent, the candidates on their bench, looks asked. */
 async function endRights(
   db: Kysely<DB>,
   campaignId: number,
   personId: number,
   ended: { lead: boolean; grade: boolean },
 ): Promise<{ invitationsWithdrawn?: number }> {
-  if (ended.grade) await deleteLeases(db, campaignId, personId, null)
+  if (ended.grade) {
+    await deleteLeases(db, campaignId, personId, null)
+    await setAsksWithdrawn(db, { campaignId, personId }, isoTime())
+  }
   const withdrawn = ended.lead ? await withdrawInvitationsBy(db, campaignId, personId, isoTime()) : 0
   if (withdrawn > 0) await forgetDeadLinks(db)
   return withdrawn > 0 ? { invitationsWithdrawn: withdrawn } : {}

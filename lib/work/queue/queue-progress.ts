@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { countAsks } from '@/db/queries/asked-looks'
 import { countGradedCandidates, countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import { isoTime } from '@/lib/platform/clock'
@@ -7,9 +8,9 @@ import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 
 export interface QueueProgress {
-  /** Candidates this person has graded. */
+  /** Looks this person has given: candidates graded, and looks that they were asked for. */
   given: number
-  /** Candidates this person may still be shown, those on other people's benches just now included. */
+  /** Looks this person may still give: asked looks, and candidates that they may still be shown, those on other people's benches just now included. */
   left: number
 }
 
@@ -17,8 +18,9 @@ export async function queueProgress(db: Kysely<DB>, permit: CampaignPermit<'grad
   const { campaign, viewer } = permit
   const { gradesWanted } = await ruleInForce(db, campaign.id)
   const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted, now: isoTime() }
+  const asks = await countAsks(db, asker)
   return {
-    given: await countGradedCandidates(db, campaign.id, viewer.id),
-    left: await countOpenCandidates(db, asker),
+    given: (await countGradedCandidates(db, campaign.id, viewer.id)) + asks.answered,
+    left: (await countOpenCandidates(db, asker)) + asks.open,
   }
 }

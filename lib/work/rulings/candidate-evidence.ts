@@ -12,6 +12,7 @@ import { notFound } from '@/lib/platform/problems/problem'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import { informedPeople } from '@/lib/work/discussion/list-asks'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
@@ -66,6 +67,8 @@ export interface EvidenceGrade {
   own: boolean
   grade: GradeLetter
   occasion: 'first' | 'asked'
+  /** An asked look of somebody who could see the others' grades before. */
+  informed: boolean
   tags: string[]
   remark: string | null
   seconds: number | null
@@ -144,12 +147,13 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
   const named = permit.role === 'lead'
   const by = (person: { name: string; pseudonym: string | null }) =>
     named ? person.name : (person.pseudonym ?? 'a member')
-  const [answers, verdictRows, rulingRows, changes, designation] = await Promise.all([
+  const [answers, verdictRows, rulingRows, changes, designation, informed] = await Promise.all([
     listAnswersOf(db, candidate.id),
     listVerdictsOf(db, candidate.id),
     listRulingsOf(db, candidate.id),
     listStateChanges(db, candidate.id),
     findDesignation(db, candidate.id),
+    informedPeople(db, candidate.id),
   ])
   const verdicts = verdictRows.map(({ rule, ...verdict }) => ({ ...verdict, rule: ruleOf(rule) }))
   const rulings = rulingRows.map((row) => ({
@@ -176,7 +180,7 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     lensRedshift: candidate.lens_redshift,
     sourceRedshift: candidate.source_redshift,
     votes: countLetters(answers),
-    grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id)).sort(surestFirst),
+    grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id, informed)).sort(surestFirst),
     verdict: verdicts.at(-1) ?? null,
     rulings,
     standingRuling: newest && newest.outcome !== 'by verdict' ? newest : null,
@@ -200,13 +204,14 @@ function countLetters(answers: readonly EvidenceAnswer[]): Record<GradeLetter, n
   return votes
 }
 
-function gradeOf(answer: EvidenceAnswer, by: string, viewerId: number): EvidenceGrade {
+function gradeOf(answer: EvidenceAnswer, by: string, viewerId: number, informed: ReadonlySet<number>): EvidenceGrade {
   return {
     id: answer.id,
     by,
     own: answer.personId === viewerId,
     grade: answer.grade,
     occasion: answer.occasion === 'asked' ? 'asked' : 'first',
+    informed: answer.occasion === 'asked' && informed.has(answer.personId),
     tags: fromJson(answer.tags),
     remark: answer.remark,
     seconds: answer.seconds,

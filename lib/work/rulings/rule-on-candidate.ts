@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { setAsksWithdrawn } from '@/db/queries/asked-looks'
 import { findCandidate } from '@/db/queries/candidates'
 import { listVerdictsOf } from '@/db/queries/consensus'
 import { insertRuling, listRulingsOf } from '@/db/queries/rulings'
@@ -20,7 +21,7 @@ export interface RulingAnswer {
 
 /**
  * A lead decides a candidate. The ruling is appended and stands over every verdict until a newer ruling; 'by verdict' steps
- * back, and the newest verdict holds again. State, change, catalogue and audit event are written with it or not at all.
+ * back, and the newest verdict holds again. Looks that were asked for are withdrawn when it is decided. State, change, catalogue and audit event are written with it or not at all.
  * @throws Problem 404 no such candidate here; 409 `calibration`, `ruled-meanwhile`, `no-ruling`. ZodError on bad input.
  */
 export async function ruleOnCandidate(
@@ -41,6 +42,7 @@ export async function ruleOnCandidate(
     const looksAsked = looksAskedBy(outcome, candidate, gradesWanted)
     const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
     const rulingId = await insertRuling(transaction, row)
+    if (outcome === 'confirmed' || outcome === 'set aside') await setAsksWithdrawn(transaction, { candidateId }, now)
     const result = await outcomeOf(transaction, candidate, ruling, rulingId)
     await applyStates(transaction, permit.campaign, [result], now)
     await recordEvent(transaction, {
