@@ -1,0 +1,42 @@
+import type { AgreementReport, Alert, CampaignAgreement } from './report-types'
+
+/** Krippendorff (2004, section 11.4.2, from memory): below 0.667 not even tentative conclusions. */
+const LOW_ALPHA = 0.667
+/** An alpha over fewer candidates may be chance. Our choice, no source. */
+const LEAST_CANDIDATES = 30
+/** Stamps of each kind below which completeness and reliability are hardly measured: with 20, a share of 0.9 has a Wilson
+ * interval of about 0.70 to 0.97. Our choice, no source. */
+export const LEAST_STAMPS = 20
+
+export function alertOnAlpha({ coefficients, candidates }: CampaignAgreement): Alert[] {
+  const alpha = coefficients.find(({ key }) => key === 'alpha')
+  if (!alpha || alpha.value === null || alpha.value >= LOW_ALPHA || candidates < LEAST_CANDIDATES) return []
+  const interval = alpha.interval
+    ? ` (95 % interval ${alpha.interval.low.toFixed(2)} to ${alpha.interval.high.toFixed(2)})`
+    : ''
+  return [
+    {
+      key: 'alpha-low',
+      grader: null,
+      title: 'The graders agree less than is commonly asked for',
+      because: `Alpha is ${alpha.value.toFixed(2)}${interval} over ${candidates.toLocaleString('en')} candidates; commonly 0.67 is the least for tentative conclusions.`,
+      advice:
+        'Look at some splits together and agree on what each grade means. Where lenses are rare, see AC2 beside it.',
+    },
+  ]
+}
+
+export function alertOnStamps({ calibration }: Pick<AgreementReport, 'calibration'>): Alert[] {
+  const { stamps, lensStamps } = calibration
+  const others = stamps - lensStamps
+  if (lensStamps >= LEAST_STAMPS && others >= LEAST_STAMPS) return []
+  return [
+    {
+      key: 'few-stamps',
+      grader: null,
+      title: stamps === 0 ? 'There are no calibration stamps' : 'There are few calibration stamps',
+      because: `${lensStamps} known lenses and ${others} known non-lenses are in the campaign; below ${LEAST_STAMPS} of each, reliability rests on the graders’ agreement with each other.`,
+      advice: 'Mix more candidates of known truth into the queue, simulated lenses among them.',
+    },
+  ]
+}
