@@ -19,7 +19,7 @@ export async function findFileByContent(
   return row ?? null
 }
 
-/** A file in use with these bytes, under any name. */
+/** A file in use with these bytes, under any name. Looked for by the bytes: by fate, SQLite would read the whole campaign. */
 export async function findFileInUse(
   db: Kysely<DB>,
   campaignId: number,
@@ -32,7 +32,7 @@ export async function findFileInUse(
     .where('campaign_id', '=', campaignId)
     .where('sha256', '=', sha256)
     .where('kind', '=', kind)
-    .where('fate', 'in', ['stored', 'read', 'imaged'])
+    .where(sql<SqlBool>`+fate in ('stored', 'read', 'imaged')`)
     .where('replaced_by', 'is', null)
     .orderBy('id')
     .limit(1)
@@ -191,15 +191,11 @@ export async function countWaitingFiles(db: Kysely<DB>, campaignId: number): Pro
   return row.n
 }
 
-/** When the newest file of a campaign came, or null. */
+/** When the newest file of a campaign came, or null. Asked batch by batch, which takes one step of an index each. */
 export async function newestDelivery(db: Kysely<DB>, campaignId: number): Promise<string | null> {
-  const row = await db
-    .selectFrom('file')
-    .select('created_at')
-    .where('campaign_id', '=', campaignId)
-    .orderBy('id', 'desc')
-    .limit(1)
-    .executeTakeFirst()
+  const newest = sql<number>`(select max((select max(id) from file of_batch where of_batch.batch_id = batch.id))
+    from batch where batch.campaign_id = ${campaignId})`
+  const row = await db.selectFrom('file').select('created_at').where('id', '=', newest).executeTakeFirst()
   return row?.created_at ?? null
 }
 
@@ -289,7 +285,19 @@ export interface FilePageFilter {
   limit: number
 }
 
+const FATES: readonly FileFate[] = ['stored', 'read', 'imaged', 'duplicate', 'refused']
+
+/** A page of files by key. Each fate is read by its index in order, so that no page sorts the whole campaign. */
 export async function listFiles(db: Kysely<DB>, campaignId: number, filter: FilePageFilter): Promise<ListedFile[]> {
+  const { fate, notFate, limit } = filter
+  const wanted = FATES.filter((one) => one !== notFate && (fate === undefined || one === fate))
+  const [first, ...others] = wanted.map((one) => db.selectFrom(filesOfFate(db, campaignId, one, filter)).selectAll())
+  if (!first) return []
+  const together = others.reduce((all, next) => all.unionAll(next), first)
+  return together.orderBy('id').limit(limit).execute()
+}
+
+function filesOfFate(db: Kysely<DB>, campaignId: number, fate: FileFate, { search, afterId, limit }: FilePageFilter) {
   let query = db
     .selectFrom('file')
     .innerJoin('batch', 'batch.id', 'file.batch_id')
@@ -310,11 +318,10 @@ export async function listFiles(db: Kysely<DB>, campaignId: number, filter: File
       'file.updated_at as updatedAt',
     ])
     .where('file.campaign_id', '=', campaignId)
-    .where('file.id', '>', filter.afterId)
-  if (filter.fate) query = query.where('file.fate', '=', filter.fate)
-  if (filter.notFate) query = query.where('file.fate', '!=', filter.notFate)
-  if (filter.search) query = query.where(sql<SqlBool>`instr(lower(file.name), ${filter.search.toLowerCase()}) > 0`)
-  return query.orderBy('file.id').limit(filter.limit).execute()
+    .where('file.fate', '=', fate)
+    .where('file.id', '>', afterId)
+  if (search) query = query.where(sql<SqlBool>`instr(lower(file.name), ${search.toLowerCase()}) > 0`)
+  return query.orderBy('file.id').limit(limit).as('part')
 }
 
 /** How many files have which fate; a file that waits to be read while a newer one of its name is here is not counted. */

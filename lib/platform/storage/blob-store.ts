@@ -1,6 +1,6 @@
 import { createHash, randomUUID } from 'node:crypto'
 import { constants, createReadStream, type ReadStream } from 'node:fs'
-import { access, mkdir, open, readdir, readFile, rename, stat, unlink } from 'node:fs/promises'
+import { access, mkdir, open, readdir, readFile, rename, stat, unlink, type FileHandle } from 'node:fs/promises'
 import path from 'node:path'
 
 /**
@@ -14,6 +14,7 @@ export interface StoredBlob {
 }
 
 export class BlobStore {
+  readonly #madeFolders = new Set<string>()
   constructor(
     private readonly folder: string,
     private readonly temporaryFolder: string,
@@ -34,8 +35,7 @@ export class BlobStore {
   async put(bytes: Uint8Array): Promise<StoredBlob> {
     const sha256 = createHash('sha256').update(bytes).digest('hex')
     if (!(await this.has(sha256))) {
-      const temporary = await this.temporaryName()
-      const handle = await open(temporary, 'wx')
+      const { temporary, handle } = await this.openTemporary()
       try {
         await handle.writeFile(bytes)
         await handle.sync()
@@ -52,10 +52,9 @@ export class BlobStore {
    * rest; nothing is left behind then, nor when the stream breaks.
    */
   async putStream(chunks: AsyncIterable<Uint8Array>, onBytes: (total: number) => void = () => {}): Promise<StoredBlob> {
-    const temporary = await this.temporaryName()
+    const { temporary, handle } = await this.openTemporary()
     const hash = createHash('sha256')
     let total = 0
-    const handle = await open(temporary, 'wx')
     try {
       for await (const chunk of chunks) {
         total += chunk.byteLength
@@ -104,14 +103,27 @@ export class BlobStore {
     return removed
   }
 
-  private async temporaryName(): Promise<string> {
-    await mkdir(this.temporaryFolder, { recursive: true })
-    return path.join(this.temporaryFolder, randomUUID())
+  private async openTemporary(): Promise<{ temporary: string; handle: FileHandle }> {
+    const temporary = path.join(this.temporaryFolder, randomUUID())
+    return { temporary, handle: await this.inFolder(this.temporaryFolder, () => open(temporary, 'wx')) }
   }
 
   private async adopt(temporary: string, sha256: string): Promise<void> {
     const target = this.pathOf(sha256)
-    await mkdir(path.dirname(target), { recursive: true })
-    await rename(temporary, target)
+    await this.inFolder(path.dirname(target), () => rename(temporary, target))
+  }
+
+  /** Makes the folder once, and again where somebody has removed it since. */
+  private async inFolder<T>(folder: string, work: () => Promise<T>): Promise<T> {
+    if (this.#madeFolders.has(folder)) {
+      try {
+        return await work()
+      } catch (error) {
+        if ((error as NodeJS.ErrnoException).code !== 'ENOENT') throw error
+      }
+    }
+    await mkdir(folder, { recursive: true })
+    this.#madeFolders.add(folder)
+    return work()
   }
 }

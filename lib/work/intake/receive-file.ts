@@ -5,6 +5,7 @@ import type { FileFate, FileRow } from '@/db/schema/intake'
 import { fromJson } from '@/db/schema/values'
 import type { BlobStore } from '@/lib/platform/storage/blob-store'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { commitTogether } from './commit-together'
 import { deliveryBatch } from './delivery-batch'
 import { kindOfName } from './file-name'
 import { keepFile } from './keep-file'
@@ -37,7 +38,7 @@ export async function receiveFile(
     batchId: (transaction: Kysely<DB>) => deliveryBatch(transaction, permit, input.batch),
     columns: input.columns,
   }
-  const row = await db.transaction().execute((transaction) => keepFile(transaction, delivery, input.name, blob))
+  const row = await commitTogether(db, (transaction) => keepFile(transaction, delivery, input.name, blob))
   const match = row.kind === 'fits' ? matchOf(permit, row.name) : null
   return {
     id: row.id,
