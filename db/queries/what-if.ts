@@ -1,0 +1,58 @@
+import { sql, type Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { CandidateState } from '../schema/intake'
+import { among, inCampaign } from './by-ids'
+
+export interface CandidateForWhatIf {
+  id: number
+  state: CandidateState
+  truth: 'lens' | 'not a lens' | null
+  /** 1 where a ruling stands over verdicts */
+  ruled: 0 | 1
+}
+
+/** A page of the campaign's candidates by id, calibration stamps among them. */
+export async function listForWhatIf(
+  db: Kysely<DB>,
+  page: { campaignId: number; after: number; limit: number },
+): Promise<CandidateForWhatIf[]> {
+  return (
+    db
+      .selectFrom('candidate')
+      .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+      .select(['candidate.id', 'candidate.state', 'candidate.truth'])
+      .select(sql<0 | 1>`ruling.outcome is not null and ruling.outcome <> 'by verdict'`.as('ruled'))
+      .where('candidate.id', '>', page.after)
+      // The plus keeps SQLite on the primary key: by an index on the campaign it would sort the whole campaign for each page.
+      .where(inCampaign('candidate.campaign_id', page.campaignId))
+      .orderBy('candidate.id')
+      .limit(page.limit)
+      .execute()
+  )
+}
+
+/** Grades of the campaign that came after this one, corrections among them. */
+export async function countGradesAfter(db: Kysely<DB>, campaignId: number, gradeId: number): Promise<number> {
+  const row = await db
+    .selectFrom('grade')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('id', '>', gradeId)
+    .where(inCampaign('campaign_id', campaignId))
+    .executeTakeFirstOrThrow()
+  return row.n
+}
+
+/** Names of these candidates of the campaign; unknown ones are left out. */
+export async function listNamesOf(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateIds: readonly number[],
+): Promise<{ id: number; name: string }[]> {
+  return db
+    .selectFrom('candidate')
+    .select(['id', 'name'])
+    .where(inCampaign('campaign_id', campaignId))
+    .where('id', 'in', among(candidateIds))
+    .orderBy('id')
+    .execute()
+}
