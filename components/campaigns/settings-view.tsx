@@ -11,12 +11,14 @@ import { NamePatternForm, RuleForm } from './settings-forms'
 export function SettingsView({
   campaign,
   picturesHref,
+  whatIfHref,
   versions,
   changeRule,
   changeNamePattern,
 }: {
   campaign: { name: string; survey: string; acronym: string; bands: string[]; namePattern: string | null }
   picturesHref: string
+  whatIfHref: string
   versions: RuleVersion[]
   changeRule: FormAction
   changeNamePattern: FormAction
@@ -47,6 +49,9 @@ export function SettingsView({
         }
       >
         <RuleForm rule={versions[0]} action={changeRule} />
+        <ButtonLink href={whatIfHref} className="self-start">
+          Try other thresholds before saving any
+        </ButtonLink>
       </FormSection>
       <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
         <RuleHistory versions={versions} />

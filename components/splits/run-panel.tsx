@@ -1,5 +1,6 @@
 'use client'
 
+import Link from 'next/link'
 import { useActionState } from 'react'
 import type { FormState } from '@/components/ui/form-state'
 import { counted, moment } from '@/components/campaigns/in-words'
@@ -22,7 +23,15 @@ function Measure({ name, value, words }: { name: string; value: number | null; w
 }
 
 /** The newest consensus run in numbers and words, and the button that runs it now. */
-export function RunPanel({ run, action }: { run: NewestRun | null; action: RunAction }) {
+export function RunPanel({
+  run,
+  action,
+  whatIfHref,
+}: {
+  run: NewestRun | null
+  action: RunAction
+  whatIfHref: string
+}) {
   const [state, submit, pending] = useActionState(action, {})
   const { summary } = run ?? {}
   return (
@@ -43,6 +52,11 @@ export function RunPanel({ run, action }: { run: NewestRun | null; action: RunAc
         </form>
       </div>
       <FormNote state={state} />
+      {run ? (
+        <Link href={whatIfHref} className="self-start text-note text-mute underline underline-offset-4 hover:text-text">
+          What if the thresholds were others?
+        </Link>
+      ) : null}
       {summary ? (
         <>
           <dl className="flex flex-col gap-0.5">

@@ -144,7 +144,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
         )}
       </div>
       <div className="border-t border-line lg:col-start-1 lg:row-start-2 lg:border-r">
-        <RunPanel run={props.run} action={props.runAction} />
+        <RunPanel run={props.run} action={props.runAction} whatIfHref={`/campaigns/${slug}/what-if`} />
       </div>
     </div>
   )

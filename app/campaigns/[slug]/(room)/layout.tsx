@@ -17,7 +17,12 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/bench`, label: 'Bench' }]),
     ...(lead ? [{ href: `${home}/intake`, label: 'Intake' }] : []),
     { href: `${home}/candidates`, label: 'Candidates', count: count('candidates') },
-    ...(lead ? [{ href: `${home}/splits`, label: 'Splits', count: count('split') }] : []),
+    ...(lead
+      ? [
+          { href: `${home}/splits`, label: 'Splits', count: count('split') },
+          { href: `${home}/what-if`, label: 'What if' },
+        ]
+      : []),
     { href: `${home}/catalogue`, label: 'Catalogue', count: count('confirmed') },
     ...(lead
       ? [

@@ -15,6 +15,7 @@ export default async function SettingsPage({ params }: PageProps<'/campaigns/[sl
     <SettingsView
       campaign={{ ...campaign, bands: fromJson(campaign.bands), namePattern: campaign.name_pattern }}
       picturesHref={`/campaigns/${slug}/settings/pictures`}
+      whatIfHref={`/campaigns/${slug}/what-if`}
       versions={await listRuleVersions(db, permit)}
       changeRule={changeRuleAction.bind(null, slug)}
       changeNamePattern={changeNamePatternAction.bind(null, slug)}
