@@ -56,6 +56,7 @@ const JUDGEMENT: Judgement = {
   votes: { A: 1, B: 2, C: 0, N: 0, U: 0 },
   grades: GRADES,
   verdict: VERDICT,
+  why: null,
   rulings: [],
   standingRuling: null,
   history: [{ id: 1, from: 'open', to: 'confirmed', cause: 'verdict', reason: VERDICT.reason, at: AT }],

@@ -23,6 +23,7 @@ import { RulingList, StateHistory } from './ruling-record'
 import { VerdictArithmetic } from './verdict-arithmetic'
 import { useViewKeys } from './use-view-keys'
 import { ViewsTray } from './views-tray'
+import { WhyReliability } from './why-reliability'
 
 const EVIDENCE_KEYS = [
   { keys: ['1', '…', '9'], does: 'view' },
@@ -102,6 +103,13 @@ export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleActio
             />
             <KeyLine on={keysOn} onSwitch={setKeysOn} keys={EVIDENCE_KEYS} />
           </div>
+          {judgement?.why && judgement.verdict ? (
+            <Section title={`Why the verdict is ‘${judgement.verdict.outcome}’`}>
+              <p className="max-w-prose">{judgement.verdict.reason}</p>
+              <WhyReliability why={judgement.why} verdict={judgement.verdict} />
+              <p className="text-note text-mute">Verdict of {moment(judgement.verdict.at)}.</p>
+            </Section>
+          ) : null}
           <CandidateFacts evidence={evidence} />
         </div>
         <div className="flex min-w-0 flex-col gap-7">
@@ -152,9 +160,11 @@ function JudgementColumn({ judgement }: { judgement: Judgement }) {
         <VoteStrip votes={judgement.votes} />
         <GradeList grades={judgement.grades} />
       </Section>
-      <Section title="The verdict and its sum">
-        <VerdictArithmetic verdict={judgement.verdict} grades={judgement.grades} />
-      </Section>
+      {judgement.why ? null : (
+        <Section title="The verdict and its sum">
+          <VerdictArithmetic verdict={judgement.verdict} grades={judgement.grades} />
+        </Section>
+      )}
       <Section title={judgement.rulings.length > 0 ? counted(judgement.rulings.length, 'ruling') : 'Rulings'}>
         <RulingList rulings={judgement.rulings} standing={judgement.standingRuling} />
       </Section>

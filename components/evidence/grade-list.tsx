@@ -2,7 +2,7 @@ import { counted } from '@/components/campaigns/in-words'
 import type { GradeLetter } from '@/db/schema/grading'
 import type { EvidenceGrade } from '@/lib/work/rulings/candidate-evidence'
 
-const LETTER: Record<GradeLetter, string> = {
+export const LETTER_INK: Record<GradeLetter, string> = {
   A: 'text-letter-a',
   B: 'text-letter-b',
   C: 'text-letter-c',
@@ -33,7 +33,7 @@ export function GradeList({ grades }: { grades: EvidenceGrade[] }) {
       {grades.map((grade) => (
         <li key={grade.id} className="grid grid-cols-[1.75rem_minmax(0,1fr)_auto] gap-x-1 border-b border-line py-2">
           <span
-            className={`row-span-2 text-lg font-bold leading-6 ${LETTER[grade.grade]}`}
+            className={`row-span-2 text-lg font-bold leading-6 ${LETTER_INK[grade.grade]}`}
             aria-label={`${grade.grade}, ${MEANING[grade.grade]}`}
           >
             {grade.grade === 'U' ? '?' : grade.grade}
@@ -41,7 +41,11 @@ export function GradeList({ grades }: { grades: EvidenceGrade[] }) {
           <span className="truncate">
             {grade.by}
             {grade.own ? <span className="text-mute"> (you)</span> : null}
-            {grade.occasion === 'asked' ? <span className="text-note text-mute">, asked for another look</span> : null}
+            {grade.occasion === 'asked' ? (
+              <span className="text-note text-mute">
+                , asked for a look{grade.informed ? ', could see the others’ grades' : ''}
+              </span>
+            ) : null}
           </span>
           <span className="figures text-small text-mute">
             {grade.seconds === null

@@ -1,6 +1,7 @@
 import { counted, moment } from '@/components/campaigns/in-words'
 import { GRADE_POINTS, isGrade } from '@/lib/science/agreement/grades'
 import type { EvidenceGrade, EvidenceVerdict } from '@/lib/work/rulings/candidate-evidence'
+import { whatWouldChange } from '@/lib/work/rulings/what-would-decide'
 import { MeanScale } from './mean-scale'
 
 /**
@@ -46,6 +47,7 @@ export function VerdictArithmetic({ verdict, grades }: { verdict: EvidenceVerdic
     )
   }
   const newer = grades.filter((grade) => grade.givenAt > verdict.at).length
+  const changes = verdict.rule.method === 'mean' && newer === 0 ? whatWouldChange(verdict.rule, grades) : []
   return (
     <div className="flex flex-col gap-3">
       <p>{verdict.reason}</p>
@@ -53,6 +55,16 @@ export function VerdictArithmetic({ verdict, grades }: { verdict: EvidenceVerdic
       <p className="text-small text-mute">
         <span className="text-text">{arithmeticInWords(verdict, grades)}</span> {thresholdsInWords(verdict)}
       </p>
+      {changes.length > 0 ? (
+        <p className="text-small text-mute">
+          <span className="font-semibold text-text">
+            {verdict.outcome === 'split' || verdict.outcome === 'open'
+              ? 'What would decide it.'
+              : 'What would change it.'}
+          </span>{' '}
+          {changes.join(' ')}
+        </p>
+      ) : null}
       <p className="text-note text-mute">
         Verdict of {moment(verdict.at)}.
         {newer > 0 ? ` ${counted(newer, 'grade')} came after it; the next consensus run takes them in.` : ''}

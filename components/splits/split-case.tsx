@@ -9,6 +9,7 @@ import { arithmeticInWords, thresholdsInWords } from '@/components/evidence/verd
 import { RulingForm } from '@/components/evidence/ruling-form'
 import { RulingList } from '@/components/evidence/ruling-record'
 import { ViewsTray } from '@/components/evidence/views-tray'
+import { WhyReliability } from '@/components/evidence/why-reliability'
 import type { LightStore } from '@/components/light/light-store'
 import type { FormAction } from '@/components/people/use-kept-form'
 import { Notice } from '@/components/ui/notice'
@@ -79,6 +80,11 @@ export function SplitCase({
                 blinking={controls.blinking}
               />
             </div>
+            {judgement.why && verdict ? (
+              <section aria-label="The verdict as a sum">
+                <WhyReliability why={judgement.why} verdict={verdict} />
+              </section>
+            ) : null}
           </div>
           <div className="flex min-w-0 flex-col gap-5">
             <div className="flex max-w-prose flex-col gap-1.5 text-small text-mute">
@@ -93,7 +99,7 @@ export function SplitCase({
                   <span className="font-semibold text-text">What would decide it.</span> {decides.join(' ')}
                 </p>
               ) : null}
-              {verdict ? (
+              {verdict && !judgement.why ? (
                 <p className="text-note">
                   {arithmeticInWords(verdict, grades)} {thresholdsInWords(verdict)}
                 </p>

@@ -88,6 +88,7 @@ function judgement(more: Partial<Judgement> = {}): Judgement {
       rule: RULE,
       at: AT,
     },
+    why: null,
     rulings: [],
     standingRuling: null,
     history: [],

@@ -1,10 +1,11 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Rule } from '../schema/campaigns'
-import type { Run, RunSummary } from '../schema/consensus'
+import type { Run, RunModel, RunSummary } from '../schema/consensus'
 import type { GradeLetter } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
 import { toJson, type IsoTime, type Json } from '../schema/values'
+import { inCampaign } from './by-ids'
 
 /**
  * The answers that count for a verdict: of each person and candidate the newest standing one, given first or asked for.
@@ -28,6 +29,7 @@ function countedAnswers(db: Kysely<DB>, upTo?: number) {
 }
 
 export interface CountedAnswer {
+  id: number
   candidateId: number
   personId: number
   grade: GradeLetter
@@ -39,7 +41,7 @@ export async function listCountedAnswers(
   range: { campaignId: number; from: number; to: number; upTo: number },
 ): Promise<CountedAnswer[]> {
   return countedAnswers(db, range.upTo)
-    .select(['grade.candidate_id as candidateId', 'grade.person_id as personId', 'grade.grade'])
+    .select(['grade.id', 'grade.candidate_id as candidateId', 'grade.person_id as personId', 'grade.grade'])
     .where('grade.candidate_id', '>=', range.from)
     .where('grade.candidate_id', '<=', range.to)
     .where(sql<boolean>`+grade.campaign_id = ${range.campaignId}`)
@@ -83,9 +85,9 @@ export interface EvidenceAnswer {
   givenAt: IsoTime
 }
 
-/** The counted answers of one candidate with who gave them, in order of their ids. */
-export async function listAnswersOf(db: Kysely<DB>, candidateId: number): Promise<EvidenceAnswer[]> {
-  return countedAnswers(db)
+/** The counted answers of one candidate with who gave them, in order of their ids; as they stood at the grade `upTo`, or now. */
+export async function listAnswersOf(db: Kysely<DB>, candidateId: number, upTo?: number): Promise<EvidenceAnswer[]> {
+  return countedAnswers(db, upTo)
     .innerJoin('person', 'person.id', 'grade.person_id')
     .leftJoin('membership', (join) =>
       join
@@ -159,10 +161,13 @@ export async function listVerdictsOf(db: Kysely<DB>, candidateId: number): Promi
 }
 
 /** The newest rows of a moment: together with a rule they fix what a run reads. */
-export async function newestInput(
-  db: Kysely<DB>,
-  campaignId: number,
-): Promise<{ newestGradeId: number; newestCandidateId: number }> {
+export interface RunBounds {
+  newestGradeId: number
+  newestCandidateId: number
+  newestLeftOutId: number
+}
+
+export async function newestInput(db: Kysely<DB>, campaignId: number): Promise<RunBounds> {
   const grade = await db
     .selectFrom('grade')
     .select((e) => e.fn.max('id').as('id'))
@@ -172,7 +177,68 @@ export async function newestInput(
     .select((e) => e.fn.max('id').as('id'))
     .where('campaign_id', '=', campaignId)
     .executeTakeFirst()
-  return { newestGradeId: grade?.id ?? 0, newestCandidateId: candidate?.id ?? 0 }
+  const leftOut = await db
+    .selectFrom('left_out')
+    .select((e) => e.fn.max('id').as('id'))
+    .where('campaign_id', '=', campaignId)
+    .executeTakeFirst()
+  return {
+    newestGradeId: grade?.id ?? 0,
+    newestCandidateId: candidate?.id ?? 0,
+    newestLeftOutId: leftOut?.id ?? 0,
+  }
+}
+
+/** Whose grades do not count, as it stood when that decision was the newest; in order of person. */
+export async function listLeftOutPeople(db: Kysely<DB>, campaignId: number, upTo: number): Promise<number[]> {
+  const rows = await db
+    .selectFrom('left_out')
+    .select('person_id as personId')
+    .where('campaign_id', '=', campaignId)
+    .where('left_out', '=', 1)
+    .where('id', 'in', (e) =>
+      e
+        .selectFrom('left_out as newest')
+        .select((n) => n.fn.max('newest.id').as('id'))
+        .where('newest.campaign_id', '=', campaignId)
+        .where('newest.id', '<=', upTo)
+        .groupBy('newest.person_id'),
+    )
+    .orderBy('person_id')
+    .execute()
+  return rows.map((row) => row.personId)
+}
+
+/** Pseudonyms of everybody who is or was a member. They never change. */
+export async function listPseudonyms(db: Kysely<DB>, campaignId: number): Promise<Map<number, string>> {
+  const rows = await db
+    .selectFrom('membership')
+    .select(['person_id as personId', 'pseudonym'])
+    .where('campaign_id', '=', campaignId)
+    .execute()
+  return new Map(rows.map((row) => [row.personId, row.pseudonym]))
+}
+
+export interface CandidateOfRun {
+  id: number
+  truth: 'lens' | 'not a lens' | null
+}
+
+/** A page of a campaign's candidates by id. */
+export async function listCandidatesOfRun(
+  db: Kysely<DB>,
+  page: { campaignId: number; after: number; upTo: number; limit: number; withCalibration: boolean },
+): Promise<CandidateOfRun[]> {
+  return db
+    .selectFrom('candidate')
+    .select(['id', 'truth'])
+    .where('id', '>', page.after)
+    .where('id', '<=', page.upTo)
+    .where(inCampaign('campaign_id', page.campaignId))
+    .$if(!page.withCalibration, (query) => query.where('truth', 'is', null))
+    .orderBy('id')
+    .limit(page.limit)
+    .execute()
 }
 
 export interface CandidateWithVerdict {
@@ -182,7 +248,11 @@ export interface CandidateWithVerdict {
   cannotJudge: number | null
   mean: number | null
   spread: number | null
+  probability: number | null
   reason: string | null
+  /** Of the run that gave the verdict. */
+  ruleId: number | null
+  newestGradeId: number | null
 }
 
 /** A page of a campaign's candidates with their newest verdicts, by id; calibration candidates left out. */
@@ -194,6 +264,7 @@ export async function listCandidatesWithVerdict(
     db
       .selectFrom('candidate')
       .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
+      .leftJoin('run', 'run.id', 'verdict.run_id')
       .select([
         'candidate.id',
         'verdict.outcome',
@@ -201,7 +272,10 @@ export async function listCandidatesWithVerdict(
         'verdict.cannot_judge as cannotJudge',
         'verdict.mean',
         'verdict.spread',
+        'verdict.probability',
         'verdict.reason',
+        'run.rule_id as ruleId',
+        'run.newest_grade_id as newestGradeId',
       ])
       .where('candidate.id', '>', page.after)
       .where('candidate.id', '<=', page.upTo)
@@ -242,7 +316,9 @@ export async function insertRun(
     inputDigest: string
     newestGradeId: number
     newestCandidateId: number
+    newestLeftOutId?: number
     summary: RunSummary
+    model?: RunModel | null
     startedBy: number | null
     now: IsoTime
   },
@@ -255,7 +331,9 @@ export async function insertRun(
       input_digest: run.inputDigest,
       newest_grade_id: run.newestGradeId,
       newest_candidate_id: run.newestCandidateId,
+      newest_left_out_id: run.newestLeftOutId ?? 0,
       summary: toJson(run.summary),
+      model: run.model ? toJson(run.model) : null,
       started_by: run.startedBy,
       created_at: run.now,
     })
@@ -270,6 +348,8 @@ export interface NewVerdict {
   cannotJudge: number
   mean: number | null
   spread: number | null
+  /** of a lens, by the reliability method */
+  probability: number | null
   reason: string
 }
 
@@ -291,7 +371,7 @@ export async function insertVerdicts(
         cannot_judge: verdict.cannotJudge,
         mean: verdict.mean,
         spread: verdict.spread,
-        probability: null,
+        probability: verdict.probability,
         reason: verdict.reason,
       })),
     )

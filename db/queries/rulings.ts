@@ -1,8 +1,8 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
-import type { Ruling, RulingOutcome, StateChange } from '../schema/consensus'
+import type { Estimate, Ruling, RulingOutcome, RunModel, StateChange } from '../schema/consensus'
 import type { CandidateState } from '../schema/intake'
-import type { IsoTime } from '../schema/values'
+import type { IsoTime, Json } from '../schema/values'
 
 export interface RulingWithName extends Ruling {
   name: string
@@ -36,6 +36,26 @@ export async function findStandingRuling(db: Kysely<DB>, candidateId: number): P
     .where('candidate.id', '=', candidateId)
     .where('ruling.outcome', '!=', 'by verdict')
     .executeTakeFirst()
+  return row ?? null
+}
+
+/** The run that gave a verdict, with the model and the newest grade that it read. */
+export async function findRunOfVerdict(
+  db: Kysely<DB>,
+  verdictId: number,
+): Promise<{ id: number; model: Json<RunModel> | null; newestGradeId: number } | null> {
+  const row = await db
+    .selectFrom('verdict')
+    .innerJoin('run', 'run.id', 'verdict.run_id')
+    .select(['run.id', 'run.model', 'run.newest_grade_id as newestGradeId'])
+    .where('verdict.id', '=', verdictId)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+/** What the candidate's grades come to under the last run's reliabilities. */
+export async function findEstimateOf(db: Kysely<DB>, candidateId: number): Promise<Estimate | null> {
+  const row = await db.selectFrom('estimate').selectAll().where('candidate_id', '=', candidateId).executeTakeFirst()
   return row ?? null
 }
 

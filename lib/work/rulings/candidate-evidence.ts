@@ -17,6 +17,9 @@ import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import { describeRuling } from './describe-ruling'
+import type { ReliabilityWhy } from './explain-reliability'
+import { findWhy } from './find-why'
+import { reasonInShort } from './reason-in-short'
 
 /** Everything there is to say about one candidate, for the case of a split and for the candidate's page. */
 export interface CandidateEvidence {
@@ -49,6 +52,8 @@ export interface Judgement {
   /** The answers that count: the newest standing one of each person, surest first. */
   grades: EvidenceGrade[]
   verdict: EvidenceVerdict | null
+  /** Of a verdict by reliability: how it comes about. */
+  why: ReliabilityWhy | null
   /** newest first */
   rulings: EvidenceRuling[]
   /** The newest ruling, unless it handed the candidate back to the verdict. */
@@ -165,11 +170,13 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     at: row.created_at,
   }))
   const causeInWords = (cause: StateCause, id: number) => {
-    if (cause === 'verdict') return verdicts.find((verdict) => verdict.id === id)?.reason ?? 'A verdict.'
+    if (cause === 'verdict') return reasonInShort(verdicts.find((verdict) => verdict.id === id)?.reason ?? 'A verdict.')
     const ruling = rulings.find((row) => row.id === id)
     return ruling ? describeRuling(ruling) : 'A ruling.'
   }
   const newest = rulings.at(0)
+  const verdict = verdicts.at(-1)
+  const reader = { id: permit.viewer.id, named, onlyOwn: permit.role === 'grader' }
   const { state_cause: cause, state_cause_id: causeId } = candidate
   return {
     state: candidate.state,
@@ -181,7 +188,8 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     sourceRedshift: candidate.source_redshift,
     votes: countLetters(answers),
     grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id, informed)).sort(surestFirst),
-    verdict: verdicts.at(-1) ?? null,
+    verdict: verdict ? { ...verdict, reason: reasonInShort(verdict.reason) } : null,
+    why: verdict ? await findWhy(db, candidate.id, verdict, reader) : null,
     rulings,
     standingRuling: newest && newest.outcome !== 'by verdict' ? newest : null,
     history: changes.map((change) => ({

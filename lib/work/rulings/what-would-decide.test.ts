@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { whatWouldDecide } from './what-would-decide'
+import { whatWouldChange, whatWouldDecide } from './what-would-decide'
 
 const RULE = { gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 1 }
 const given = (letters: string) => [...letters].map((grade) => ({ grade: grade as 'A' }))
@@ -31,5 +31,33 @@ describe('what would decide a split', () => {
       'Three more A grades would confirm it.',
       'Three more N grades would set it aside.',
     ])
+  })
+})
+
+describe('what would change a verdict by the mean', () => {
+  it('counts the opposite grades that undo it and names the letters that it hangs on', () => {
+    // A, A, B, C: mean 2. One N: 8/5 = 1.6, all wanted looks in: split. Without an A: 6/3 = 2: confirmed still. Without the B:
+    // 7/3 and spread 0.94; without the C: 8/3.
+    expect(whatWouldChange(RULE, given('AABC'))).toEqual([
+      'One more N would make it split.',
+      'No grade left out by itself would change it.',
+    ])
+    // A, B, B, C: mean 2. Without the A: 5/3 and a look to come: open. Without one B: 2.
+    expect(whatWouldChange(RULE, given('ABBC'))).toEqual([
+      'One more N would make it split.',
+      'Without the A it would be open.',
+    ])
+  })
+
+  it('of a candidate that is set aside by all', () => {
+    // N, N, N, N with A: mean 0.6, spread 1.2: split.
+    expect(whatWouldChange(RULE, given('NNNN'))).toEqual([
+      'One more A would make it split.',
+      'No grade left out by itself would change it.',
+    ])
+  })
+
+  it('of a split says what would decide it', () => {
+    expect(whatWouldChange(RULE, given('BBCC'))).toEqual(whatWouldDecide(RULE, given('BBCC')))
   })
 })

@@ -34,6 +34,38 @@ export function whatWouldDecide(rule: MeanRule, answers: readonly { grade: Answe
   return sentences
 }
 
+/**
+ * What would have changed a verdict by the mean, in sentences. Of a split and of an open candidate: what would decide it. Of a
+ * decided one: the fewest further opposite grades that undo it, and the letters that it hangs on.
+ */
+export function whatWouldChange(rule: MeanRule, answers: readonly { grade: Answer }[]): string[] {
+  const given = answers.map(({ grade }) => ({ grade }))
+  const now = decide(rule, given).outcome
+  if (now === 'split' || now === 'open') return whatWouldDecide(rule, answers)
+  const opposite: Grade = now === 'confirmed' ? 'N' : 'A'
+  const withMore = (number: number): Outcome =>
+    decide({ ...rule, gradesWanted: Math.max(rule.gradesWanted, given.length + number) }, [
+      ...given,
+      ...Array.from({ length: number }, () => ({ grade: opposite })),
+    ]).outcome
+  const undo = fewest((number) => withMore(number) !== now)
+  const hangsOn = GRADES.flatMap((letter) => {
+    if (!given.some(({ grade }) => grade === letter)) return []
+    const { outcome } = decide(rule, leaveOut(given, letter))
+    return outcome === now ? [] : [`Without ${oneOf(given, letter)} it would be ${outcome}.`]
+  })
+  return [
+    undo
+      ? `${count(undo, `more ${opposite}`)} would make it ${withMore(undo)}.`
+      : `Not even ${MOST_GRADES} more ${opposite} grades would change it.`,
+    ...(hangsOn.length > 0 ? hangsOn : ['No grade left out by itself would change it.']),
+  ]
+}
+
+function oneOf(answers: readonly { grade: Answer }[], letter: Grade): string {
+  return answers.filter(({ grade }) => grade === letter).length === 1 ? `the ${letter}` : `one ${letter}`
+}
+
 function fewest(decides: (count: number) => boolean): number | null {
   for (let number = 1; number <= MOST_GRADES; number++) if (decides(number)) return number
   return null
