@@ -3,49 +3,73 @@ import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import {
   listCandidatesWithVerdict,
-  listCountedAnswers,
-  type CandidateWithVerdict,
-  type CountedAnswer,
+  listLeftOutPeople,
+  listPseudonyms,
   type NewVerdict,
+  type RunBounds,
 } from '@/db/queries/consensus'
 import type { DB } from '@/db/schema'
-import type { RunSummary } from '@/db/schema/consensus'
-import { GRADE_POINTS } from '@/lib/science/agreement/grades'
-import { decide } from '@/lib/science/agreement/mean-rule'
+import type { RunModel, RunSummary } from '@/db/schema/consensus'
+import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
+import { GRADE_POINTS, GRADES } from '@/lib/science/agreement/grades'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import { fitModel } from './fit-model'
 import { InputDigest } from './input-digest'
+import type { Judge } from './judge'
+import { judgeByMean } from './judge-by-mean'
+import { judgeByReliability } from './judge-by-reliability'
 import { measureAgreement } from './measure-agreement'
+import { PAGE, readGrades, type RunGrades } from './read-grades'
 
-/** Candidates read and decided before other work of the process gets its turn. */
-const PAGE = 500
-
-export interface RunInput {
+export interface RunInput extends RunBounds {
   campaignId: number
   rule: RuleInForce
-  newestGradeId: number
-  newestCandidateId: number
+}
+
+export interface ReadRun {
+  inputDigest: string
+  grades: RunGrades
+  /** in ascending order */
+  leftOut: number[]
 }
 
 export interface ComputedRun {
   inputDigest: string
   summary: RunSummary
+  /** of the reliability method */
+  model: RunModel | null
   /** Every verdict that differs from the candidate's verdict before. */
   changed: NewVerdict[]
 }
 
 /**
- * What a run makes of its input, without writing. Grades only grow, so that the same input gives the same digest, summary
- * and verdicts at any later time; `changed` is against the verdicts that the candidates have now. Two queries a page.
+ * What a run makes of its input, without writing. Grades and decisions on who is left out only grow, so that the same input gives
+ * the same digest, model, summary and verdicts at any later time; `changed` is against the verdicts that the candidates have now.
  */
 export async function computeRun(db: Kysely<DB>, input: RunInput): Promise<ComputedRun> {
-  const { rule } = input
-  if (rule.method !== 'mean') throw new RangeError('Only rules of the mean method are computed.')
-  const digest = new InputDigest(rule)
+  return judgeRun(db, input, await readRun(db, input))
+}
+
+/** Reads what the run judges. Two queries a page. */
+export async function readRun(db: Kysely<DB>, input: RunInput): Promise<ReadRun> {
+  const leftOut = await listLeftOutPeople(db, input.campaignId, input.newestLeftOutId)
+  const digest = new InputDigest(input.rule, leftOut)
+  const withCalibration = input.rule.method === 'reliability'
+  const grades = await readGrades(db, input, { leftOut: new Set(leftOut), withCalibration, digest })
+  return { inputDigest: digest.hex(), grades, leftOut }
+}
+
+/** One query a page. */
+export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): Promise<ComputedRun> {
+  const { grades } = read
+  const model = input.rule.method === 'reliability' ? await fitModel(grades, read.leftOut) : null
+  const judge = await judgeFor(db, input, grades, model)
+  const { ids, truth, table } = grades
   const counts: Uint16Array[] = []
-  const people = new Set<number>()
   const changed: NewVerdict[] = []
   const outcomes = { open: 0, split: 0, confirmed: 0, 'set aside': 0 }
   const totals = { candidates: 0, grades: 0, cannotJudge: 0 }
+  let row = 0
   for (let after = 0; ; await nextTurn()) {
     const page = await listCandidatesWithVerdict(db, {
       campaignId: input.campaignId,
@@ -56,64 +80,50 @@ export async function computeRun(db: Kysely<DB>, input: RunInput): Promise<Compu
     const last = page.at(-1)
     if (!last) break
     after = last.id
-    const answers = await listCountedAnswers(db, {
-      campaignId: input.campaignId,
-      from: page[0].id,
-      to: last.id,
-      upTo: input.newestGradeId,
-    })
-    const byCandidate = groupByCandidate(answers)
-    const counted: CountedAnswer[] = []
     for (const candidate of page) {
-      const given = byCandidate.get(candidate.id) ?? []
-      counted.push(...given)
-      for (const answer of given) people.add(answer.personId)
-      counts.push(countPoints(given))
-      const { n, ...decision } = decide(rule, given)
-      outcomes[decision.outcome] += 1
-      totals.grades += n
-      totals.cannotJudge += decision.cannotJudge
-      const verdict: NewVerdict = { candidateId: candidate.id, grades: n, ...decision }
-      if (given.length > 0 && differs(verdict, candidate)) changed.push(verdict)
+      while (row < ids.length && ids[row] < candidate.id) row += 1
+      if (ids[row] !== candidate.id || truth[row] !== UNKNOWN_TRUTH) continue
+      const { judgement, reason, differs } = judge(row)
+      counts.push(countPoints(table.cell.subarray(table.start[row], table.start[row + 1])))
+      outcomes[judgement.outcome] += 1
+      totals.candidates += 1
+      totals.grades += judgement.grades
+      totals.cannotJudge += judgement.cannotJudge
+      // Nothing is said of a candidate that nobody has looked at, unless something was said before.
+      const looks = judgement.grades + judgement.cannotJudge
+      if ((looks > 0 || candidate.outcome !== null) && differs(candidate)) {
+        changed.push({ candidateId: candidate.id, ...judgement, reason: reason() })
+      }
     }
-    totals.candidates += page.length
-    digest.add(counted)
   }
   const { 'set aside': setAside, ...states } = outcomes
   const summary: RunSummary = {
     ...totals,
-    graders: people.size,
+    graders: grades.peopleAtCandidates.size,
     ...states,
     setAside,
     changed: changed.length,
     ...measureAgreement(counts),
   }
-  return { inputDigest: digest.hex(), summary, changed }
+  return { inputDigest: read.inputDigest, summary, model, changed }
 }
 
-function groupByCandidate(answers: readonly CountedAnswer[]): Map<number, CountedAnswer[]> {
-  const groups = new Map<number, CountedAnswer[]>()
-  for (const answer of answers) {
-    const group = groups.get(answer.candidateId)
-    if (group) group.push(answer)
-    else groups.set(answer.candidateId, [answer])
+async function judgeFor(
+  db: Kysely<DB>,
+  { campaignId, rule }: RunInput,
+  grades: RunGrades,
+  model: RunModel | null,
+): Promise<Judge> {
+  if (rule.method === 'mean' || !model) {
+    if (rule.method !== 'mean') throw new Error('A run by the reliability method has a model.')
+    return judgeByMean(rule, grades)
   }
-  return groups
+  const pseudonyms = await listPseudonyms(db, campaignId)
+  return judgeByReliability(rule, grades, model, (personId) => pseudonyms.get(personId) ?? 'a member')
 }
 
-function countPoints(answers: readonly CountedAnswer[]): Uint16Array {
-  const counts = new Uint16Array(4)
-  for (const { grade } of answers) if (grade !== 'U') counts[GRADE_POINTS[grade]] += 1
+function countPoints(cells: Int32Array): Uint16Array {
+  const counts = new Uint16Array(GRADES.length)
+  for (const cell of cells) counts[GRADE_POINTS[GRADES[cell % GRADES.length]]] += 1
   return counts
-}
-
-function differs(verdict: NewVerdict, before: CandidateWithVerdict): boolean {
-  return (
-    verdict.outcome !== before.outcome ||
-    verdict.grades !== before.grades ||
-    verdict.cannotJudge !== before.cannotJudge ||
-    verdict.mean !== before.mean ||
-    verdict.spread !== before.spread ||
-    verdict.reason !== before.reason
-  )
 }

@@ -162,7 +162,11 @@ describe('a consensus run', () => {
     await addImagedCandidate(db, campaign, 'late')
 
     const rule = ruleOf(await requireRule(db, campaign.id))
-    const input = { newestGradeId: run.newest_grade_id, newestCandidateId: run.newest_candidate_id }
+    const input = {
+      newestGradeId: run.newest_grade_id,
+      newestCandidateId: run.newest_candidate_id,
+      newestLeftOutId: run.newest_left_out_id,
+    }
     const again = await computeRun(db, { campaignId: campaign.id, rule, ...input })
     expect(again.inputDigest).toBe(run.input_digest)
     expect({ ...again.summary, changed: 4 }).toEqual(fromJson(run.summary))

@@ -3,7 +3,14 @@ import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { requireRule } from '@/db/queries/campaigns'
 import { requireCampaign } from '@/db/queries/candidates'
-import { findNewestRun, insertRun, insertVerdicts, newestInput, type NewVerdict } from '@/db/queries/consensus'
+import {
+  findNewestRun,
+  insertRun,
+  insertVerdicts,
+  newestInput,
+  type NewVerdict,
+  type RunBounds,
+} from '@/db/queries/consensus'
 import { listConfirmedToName } from '@/db/queries/states'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
@@ -15,8 +22,9 @@ import { conflict } from '@/lib/platform/problems/problem'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { applyVerdicts } from './apply-state'
-import { computeRun, type ComputedRun } from './compute-run'
+import { judgeRun, readRun, type ComputedRun } from './compute-run'
 import { giveDesignations } from './give-designations'
+import { refreshEstimates } from './refresh-estimates'
 
 export interface RunAnswer {
   id: number
@@ -44,25 +52,30 @@ export async function runConsensusByItself(db: Kysely<DB>, campaignId: number): 
 
 /**
  * Reads and computes outside a transaction, so that grading goes on meanwhile, and writes in one. What was read is fixed by
- * the newest grade at the start; if another run or a new rule came in between, it starts again.
+ * the newest grade at the start; if another run or a new rule came in between, it starts again. Estimates follow after it.
  */
 async function runCampaign(db: Kysely<DB>, campaign: Campaign, startedBy: number | null): Promise<RunAnswer> {
   for (let attempt = 1; attempt <= ATTEMPTS; attempt++) {
     const before = await findNewestRun(db, campaign.id)
     const rule = ruleOf(await requireRule(db, campaign.id))
     const newest = await newestInput(db, campaign.id)
-    const computed = await computeRun(db, { campaignId: campaign.id, rule, ...newest })
-    if (before && before.rule_id === rule.id && before.input_digest === computed.inputDigest) {
+    const input = { campaignId: campaign.id, rule, ...newest }
+    const read = await readRun(db, input)
+    if (before && before.rule_id === rule.id && before.input_digest === read.inputDigest) {
       await nameLateComers(db, campaign)
+      await refreshEstimates(db, campaign.id, rule)
       return answer(before, rule, true)
     }
+    const computed = await judgeRun(db, input, read)
     const written = await db.transaction().execute(async (transaction) => {
       const meanwhile = await findNewestRun(transaction, campaign.id)
       const ruleNow = await requireRule(transaction, campaign.id)
       if (meanwhile?.id !== before?.id || ruleNow.id !== rule.id) return null
       return writeRun(transaction, campaign, { rule, newest, computed, startedBy })
     })
-    if (written) return answer(written, rule, false)
+    if (!written) continue
+    await refreshEstimates(db, campaign.id, rule)
+    return answer(written, rule, false)
   }
   throw conflict('runs-overlap', 'Other consensus runs of this campaign kept coming in between. Try again in a moment.')
 }
@@ -72,19 +85,20 @@ async function writeRun(
   campaign: Campaign,
   run: {
     rule: RuleInForce
-    newest: { newestGradeId: number; newestCandidateId: number }
+    newest: RunBounds
     computed: ComputedRun
     startedBy: number | null
   },
 ): Promise<Run> {
   const now = isoTime()
-  const { inputDigest, summary, changed } = run.computed
+  const { inputDigest, summary, model, changed } = run.computed
   const row = await insertRun(transaction, {
     campaignId: campaign.id,
     ruleId: run.rule.id,
     inputDigest,
     ...run.newest,
     summary,
+    model,
     startedBy: run.startedBy,
     now,
   })
