@@ -60,8 +60,8 @@ export function compareLooks(
   let last = best.sequential
   for (let run = 1; run < RUNS; run++) {
     goal = {
-      completeness: move(goal.completeness, wanted.completeness, last.completeness),
-      purity: move(goal.purity, wanted.purity, last.purity ?? 0),
+      completeness: moveGoal(goal.completeness, wanted.completeness, last.completeness),
+      purity: moveGoal(goal.purity, wanted.purity, last.purity ?? 0),
     }
     last = simulateLooks(search, { ...options, goal })
     const isFewer = last.looksPerCandidate < best.sequential.looksPerCandidate
@@ -83,12 +83,16 @@ export function compareLooks(
   }
 }
 
-function isAsGood(report: CatalogueQuality, wanted: { completeness: number; purity: number }): boolean {
+/** Whether a catalogue is at least as complete and as pure as wanted. */
+export function isAsGood(report: CatalogueQuality, wanted: { completeness: number; purity: number }): boolean {
   return report.completeness >= wanted.completeness && (report.purity ?? 0) >= wanted.purity
 }
 
-/** By the whole of what is lacking, at least a twentieth of the way to certainty; back by half of what is to spare. */
-function move(goal: number, wanted: number, reached: number): number {
+/**
+ * The next goal: moved by the whole of what is lacking, at least a twentieth of the way to certainty; back by half of what is to
+ * spare.
+ */
+export function moveGoal(goal: number, wanted: number, reached: number): number {
   if (reached < wanted) return belowOne(goal + Math.max(wanted - reached, (1 - goal) / 20))
   return Math.max(goal - (reached - wanted) / 2, goal / 2)
 }
@@ -97,8 +101,11 @@ function belowOne(goal: number): number {
   return Math.min(NEAR_CERTAINTY, goal)
 }
 
-/** An error that never happened counts as half a candidate, since Wald's number for none at all is infinite. */
-function waldNumber({ scenario, graders }: SimulatedSearch, made: CatalogueQuality): number {
+/**
+ * Wald's expected looks per candidate for the errors that were made and the true rates of a grader drawn at random. An error that
+ * never happened counts as half a candidate, since Wald's number for none at all is infinite.
+ */
+export function waldNumber({ scenario, graders }: SimulatedSearch, made: CatalogueQuality): number {
   const lenses = Math.round(scenario.lensShare * scenario.candidates)
   const rates = {
     falseConfirmed: Math.max(made.falseConfirmed, 0.5 / (scenario.candidates - lenses)),
