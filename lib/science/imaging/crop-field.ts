@@ -26,7 +26,7 @@ export function cropField(plane: BandPlane, pixelScaleArcsec: number | null, fie
     const start = (bottom + row) * plane.width + left
     data.set(plane.data.subarray(start, start + width), row * width)
   }
-  return { plane: { ...plane, width, height, data }, left, bottom }
+  return { plane: { ...plane, width, height, data, sky: undefined }, left, bottom }
 }
 
 /** The whole number nearest to `wanted`, at least 1, that is even or odd as `side` is, and not above it. */

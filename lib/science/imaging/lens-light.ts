@@ -56,7 +56,7 @@ export function subtractLensLight(planes: BandPlane[]): LensLightRemoval {
     if (!light) return plane
     const data = Float32Array.from(plane.data, (value, i) => value - normalised[k].sigma * light[i])
     for (const i of removed.galaxy?.saturated[at] ?? []) data[i] = Number.NaN
-    return { ...plane, data }
+    return { ...plane, data, sky: undefined }
   })
   const left = usable.filter((plane) => !group.includes(plane)).map((plane) => plane.band)
   const leftNote = left.length > 0 ? `Band ${left.join(', ')} differs in size and is shown as it is.` : null

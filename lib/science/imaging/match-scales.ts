@@ -54,7 +54,7 @@ function toGrid(plane: BandPlane, { width, height, pixelScaleArcsec }: BandPlane
     yx: 0,
     yy: ratio,
   })
-  return { ...plane, width, height, data, pixelScaleArcsec }
+  return { ...plane, width, height, data, pixelScaleArcsec, sky: undefined }
 }
 
 const scaleOf = (plane: BandPlane): number => plane.pixelScaleArcsec ?? Number.NaN

@@ -1,5 +1,5 @@
 /** Brings band planes to one scale, their own sky noise, which makes stamps independent of the unit of the pixels. */
-import { estimateNoise } from './noise'
+import { estimateNoise, type Noise } from './noise'
 
 export interface BandPlane {
   band: string
@@ -11,6 +11,8 @@ export interface BandPlane {
   pixelScaleArcsec?: number | null
   /** Where known (as in StampGeometry), bands that lie differently on the sky are turned before they are combined. */
   orientation?: PlaneOrientation | null
+  /** What estimateNoise says of `data`, where it has been asked already. Whoever makes other data leaves it out. */
+  sky?: Noise
 }
 
 /** Direction of north, degrees counter-clockwise from up, and whether east is 90 degrees counter-clockwise of it. */
@@ -34,11 +36,11 @@ export interface NormalisedPlane {
 }
 
 /** @throws RangeError when the number of pixels is not width x height. */
-export function normalisePlane({ band, width, height, data }: BandPlane): NormalisedPlane {
+export function normalisePlane({ band, width, height, data, sky }: BandPlane): NormalisedPlane {
   if (data.length !== width * height) {
     throw new RangeError(`Band ${band} has ${data.length} pixels, not ${width} x ${height}.`)
   }
-  const { background, sigma, finiteFraction } = estimateNoise(data, width, height)
+  const { background, sigma, finiteFraction } = sky ?? estimateNoise(data, width, height)
   const values = new Float32Array(data.length)
   const perSigma = sigma > 0 ? 1 / sigma : 0
   let missing = 0

@@ -36,5 +36,5 @@ export function northUp(
     yx: west.y,
     yy: north.y,
   })
-  return { ...plane, width, height, data }
+  return { ...plane, width, height, data, sky: undefined }
 }

@@ -18,9 +18,9 @@ export async function codePlanes({ planes, recipe }: PlanesTask): Promise<Planes
     cutouts.push(cutout)
   }
   const turned = orientPlanes(cutouts.map(bandPlane), recipe.northUp === true).planes
-  const bands: PlaneToEncode[] = turned.map(({ band, width, height, data, pixelScaleArcsec }) => {
+  const bands: PlaneToEncode[] = turned.map(({ band, width, height, data, pixelScaleArcsec, sky }) => {
     // Of the plane as it is drawn: turning it lowers its noise.
-    const { background, sigma: noise } = estimateNoise(data, width, height)
+    const { background, sigma: noise } = sky ?? estimateNoise(data, width, height)
     return { role: 'band', band, width, height, data, background, noise, pixelScaleArcsec: pixelScaleArcsec ?? null }
   })
   const derived = derivedPlanes(turned, recipe).map(({ role, plane }): PlaneToEncode => {

@@ -11,7 +11,6 @@ import {
   type FileToRead,
   type HeldPlane,
   type ImageTask,
-  type StampMade,
   type StoredFile,
 } from './worker-tasks'
 
@@ -27,10 +26,7 @@ interface Gathered {
 }
 
 /** Reads a candidate's new files and makes its stamps of them and of the planes it has already, all in one go. */
-export async function imageCandidate(
-  candidate: CandidateToImage,
-  task: ImageTask,
-): Promise<() => Promise<CandidateOutcome>> {
+export async function imageCandidate(candidate: CandidateToImage, task: ImageTask): Promise<CandidateOutcome> {
   const { files, read, replaced } = await gatherFiles(candidate, task.bands)
   const cutouts = new Map(read)
   const unreadable: string[] = []
@@ -54,26 +50,20 @@ export async function imageCandidate(
   }
   if (unreadable.length > 0) {
     outcome.imagingFault = `${NOT_IMAGED}${unreadable.join(', ')} can no longer be read on the server. Send it again under the same name.`
-    return async () => outcome
+    return outcome
   }
-  if (ordered.length === 0) return async () => outcome
-  return startDrawing(outcome, ordered, task)
+  return ordered.length === 0 ? outcome : drawn(outcome, ordered, task)
 }
 
-/** Drawing is under way when this returns; the returned function waits for it, so that the next candidate can be read. */
-function startDrawing(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageTask): () => Promise<CandidateOutcome> {
-  const planes = cutouts.map(bandPlane)
-  const drawing: Promise<StampMade[] | Error> = Promise.resolve()
-    .then(() => drawStamps(planes, task.recipe, task.stampFolder))
-    .catch((error: unknown) => (error instanceof Error ? error : new Error(String(error))))
-  return async () => {
-    const stamps = await drawing
-    if (!(stamps instanceof Error)) return { ...outcome, stamps }
+function drawn(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageTask): CandidateOutcome {
+  try {
+    return { ...outcome, stamps: drawStamps(cutouts.map(bandPlane), task.recipe, task.stampFolder) }
+  } catch (error) {
     // A full disk is no fault of the files: the whole job is tried again later.
-    if ('code' in stamps) throw stamps
+    if (!(error instanceof Error) || 'code' in error) throw error
     return {
       ...outcome,
-      imagingFault: `${NOT_IMAGED}it is read, but its pictures could not be made (${stamps.message}).`,
+      imagingFault: `${NOT_IMAGED}it is read, but its pictures could not be made (${error.message}).`,
     }
   }
 }

@@ -29,20 +29,10 @@ import type {
 // differences'); elsewhere it would be that of the whole server.
 if (!isMainThread && process.platform === 'linux') setPriority(10)
 
-/** While the PNGs of this many candidates are encoded in libuv's threads, the next is read and rendered here. */
-const AHEAD = 3
-
 export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
-  const waiting: Promise<CandidateOutcome>[] = []
-  for (const [index, candidate] of task.candidates.entries()) {
-    if (index >= AHEAD) await waiting[index - AHEAD]
-    const finish = await imageCandidate(candidate, task)
-    const outcome = finish()
-    // A failure is thrown by Promise.all below; until then it is not unhandled.
-    outcome.catch(() => {})
-    waiting.push(outcome)
-  }
-  return Promise.all(waiting)
+  const outcomes: CandidateOutcome[] = []
+  for (const candidate of task.candidates) outcomes.push(await imageCandidate(candidate, task))
+  return outcomes
 }
 
 export const planes = (task: PlanesTask): Promise<PlanesMade> => codePlanes(task)

@@ -3,7 +3,7 @@ import { readFileSync } from 'node:fs'
 import { FitsError, type FitsFile, type FitsImage } from '@/lib/science/fits/fits-types'
 import { readFits } from '@/lib/science/fits/read-fits'
 import type { BandPlane } from '@/lib/science/imaging/normalise-planes'
-import { estimateNoise } from '@/lib/science/imaging/statistics'
+import { estimateNoise, type Noise } from '@/lib/science/imaging/noise'
 import { imageCentre } from '@/lib/science/sky/image-centre'
 import type { SkyPosition } from '@/lib/science/sky/separation'
 import { pixelScaleArcsec, readWcs, WcsError, type Wcs } from '@/lib/science/sky/wcs'
@@ -16,6 +16,7 @@ import type { FileToRead, HeldPlane, PlaneRead, StoredFile } from './worker-task
 export interface Cutout {
   plane: PlaneRead
   data: Float32Array
+  sky: Noise
   centre: SkyPosition | null
   /** Why there is no position although the header seems to have one. */
   wcsFault: string | null
@@ -52,7 +53,7 @@ export async function readCutouts(file: FileToRead, bands: readonly string[]): P
 function cutoutOf(fileId: number, { band, image, planeIndex }: BandPlace, fits: FitsFile): Cutout {
   const { width, height, hdu } = image
   const data = image.planes[planeIndex]
-  const { background, sigma } = estimateNoise(data, width, height)
+  const sky = estimateNoise(data, width, height)
   const { wcs, fault } = wcsOf(image, fits)
   const scale = wcs === null ? null : Math.sqrt(pixelScaleArcsec(wcs)[0] * pixelScaleArcsec(wcs)[1])
   return {
@@ -65,10 +66,11 @@ function cutoutOf(fileId: number, { band, image, planeIndex }: BandPlace, fits: 
       height,
       wcs: wcs === null ? null : JSON.stringify(wcs),
       pixelScaleArcsec: scale !== null && Number.isFinite(scale) && scale > 0 ? scale : null,
-      background,
-      noise: sigma,
+      background: sky.background,
+      noise: sky.sigma,
     },
     data,
+    sky,
     centre: wcs === null ? null : imageCentre(wcs, width, height),
     wcsFault: fault,
   }
@@ -86,13 +88,14 @@ function wcsOf(image: FitsImage, fits: FitsFile): { wcs: Wcs | null; fault: stri
 }
 
 /** As pictures are made of it, the stored ones and those drawn live. */
-export const bandPlane = ({ plane, data }: Cutout): BandPlane => ({
+export const bandPlane = ({ plane, data, sky }: Cutout): BandPlane => ({
   band: plane.band,
   width: plane.width,
   height: plane.height,
   data,
   pixelScaleArcsec: plane.pixelScaleArcsec,
   orientation: planeOrientation(plane.wcs),
+  sky,
 })
 
 /** Pixels of a plane that was read before; null when its file can no longer be read or has changed its shape. */

@@ -3,6 +3,7 @@ import { log } from '@/lib/platform/log'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
 import type { CampaignWork, ImagingTools } from './campaign-work'
 import { commitOutcomes } from './commit-outcomes'
+import { inLanes } from './in-lanes'
 import { plannedPlanes, type CandidateOutcome, type CandidateToImage } from './worker-tasks'
 
 /**
@@ -44,25 +45,18 @@ export async function runImaging(
   onCommitted: (files: number, candidates: number) => Promise<void>,
   keepPositions = false,
 ): Promise<void> {
-  const tasks = tasksOf(candidates, tools.workers)
-  let next = 0
-  const lane = async () => {
-    for (let task = tasks[next++]; task; task = tasks[next++]) {
-      const outcomes = await imageTask(tools, work, task)
-      for (const { name, imagingFault } of outcomes) {
-        if (imagingFault) log.warn({ candidate: name, imagingFault }, 'candidate not imaged')
-      }
-      const facts = new Map(task.map((item) => [item.candidate.name, item.facts]))
-      const kept = keepPositions
-        ? outcomes.map((one) => ({ ...one, position: null, pixelScaleArcsec: null }))
-        : outcomes
-      await commitOutcomes(tools.db, work, kept, (name) => facts.get(name))
-      const files = task.reduce((sum, { candidate }) => sum + candidate.files.length, 0)
-      await onCommitted(files, task.length)
-    }
-  }
   // One lane more than threads, so that no thread waits for a commit.
-  await Promise.all(Array.from({ length: tools.workers + 1 }, lane))
+  await inLanes(tools.workers + 1, tasksOf(candidates, tools.workers), async (task) => {
+    const outcomes = await imageTask(tools, work, task)
+    for (const { name, imagingFault } of outcomes) {
+      if (imagingFault) log.warn({ candidate: name, imagingFault }, 'candidate not imaged')
+    }
+    const facts = new Map(task.map((item) => [item.candidate.name, item.facts]))
+    const kept = keepPositions ? outcomes.map((one) => ({ ...one, position: null, pixelScaleArcsec: null })) : outcomes
+    await commitOutcomes(tools.db, work, kept, (name) => facts.get(name))
+    const files = task.reduce((sum, { candidate }) => sum + candidate.files.length, 0)
+    await onCommitted(files, task.length)
+  })
 }
 
 async function imageTask(

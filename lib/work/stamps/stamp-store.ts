@@ -18,7 +18,6 @@ export function stampPath(folder: string, sha256: string): string {
 
 const hashOf = (bytes: Uint8Array): string => createHash('sha256').update(bytes).digest('hex')
 
-const madeFolders = new Set<string>()
 let serial = 0
 
 /** Synchronous: it runs in a worker, where a trip through the thread pool takes longer than the write. */
@@ -26,18 +25,13 @@ export function putStamp(folder: string, bytes: Uint8Array): { sha256: string; b
   const sha256 = hashOf(bytes)
   const target = stampPath(folder, sha256)
   if (statSync(target, { throwIfNoEntry: false })?.size !== bytes.byteLength) {
-    const place = path.dirname(target)
-    if (!madeFolders.has(place)) {
-      mkdirSync(place, { recursive: true })
-      madeFolders.add(place)
-    }
     const temporary = `${target}.${process.pid}-${serial++}-${Math.trunc(performance.now())}`
     try {
       writeFileSync(temporary, bytes)
     } catch (error) {
-      // Somebody removed the folder since: make it again, once.
+      // Its folder is not there yet.
       if ((error as NodeJS.ErrnoException).code !== 'ENOENT') throw error
-      mkdirSync(place, { recursive: true })
+      mkdirSync(path.dirname(target), { recursive: true })
       writeFileSync(temporary, bytes)
     }
     renameSync(temporary, target)
