@@ -3,6 +3,7 @@ import { claimJob, giveBackJob, setJobDone, setJobProgress, setJobRetry, type Cl
 import type { DB } from '@/db/schema'
 import type { Job } from '@/db/schema/platform'
 import { fromJson } from '@/db/schema/values'
+import { unsynced } from '@/db/unsynced'
 import { isoTime } from '../clock'
 import { log } from '../log'
 
@@ -38,7 +39,8 @@ async function runOne(db: Kysely<DB>, job: Job, handler: JobHandler): Promise<vo
       done = nextDone
       total = nextTotal
       const leaseUntil = isoTime(LEASE_MS)
-      if (await setJobProgress(db, held.claim, { done, total, leaseUntil, now: isoTime() })) {
+      const told = { done, total, leaseUntil, now: isoTime() }
+      if (await unsynced(db, (connection) => setJobProgress(connection, held.claim, told))) {
         held.claim = { id: job.id, leaseUntil }
       }
     }
@@ -48,7 +50,7 @@ async function runOne(db: Kysely<DB>, job: Job, handler: JobHandler): Promise<vo
     } finally {
       clearInterval(heartbeat)
     }
-    await setJobDone(db, held.claim, isoTime())
+    await unsynced(db, (connection) => setJobDone(connection, held.claim, isoTime()))
   } catch (error) {
     const sentence = error instanceof Error ? error.message : String(error)
     const { attempts } = job
@@ -76,7 +78,8 @@ export async function runDueJobs(
   const kinds = Object.keys(handlers)
   for (let ran = 0; ; ran++) {
     if (shouldStop()) return ran
-    const job = await claimJob(db, { kinds, now: isoTime(), leaseUntil: isoTime(LEASE_MS), holder })
+    const claim = { kinds, now: isoTime(), leaseUntil: isoTime(LEASE_MS), holder }
+    const job = await unsynced(db, (connection) => claimJob(connection, claim))
     if (!job) return ran
     await runOne(db, job, handlers[job.kind])
   }

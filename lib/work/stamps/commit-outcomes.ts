@@ -11,6 +11,7 @@ import { listReplacedBy } from '@/db/queries/duplicates'
 import { listStillWaiting, releaseDuplicates, setFileFates, type FileFateUpdate } from '@/db/queries/intake'
 import { clearImaged, deleteLaterStamps, replaceStamps, setFilesImaged } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
+import { unsynced } from '@/db/unsynced'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { isoTime } from '@/lib/platform/clock'
@@ -27,66 +28,76 @@ export interface Campaigned {
  * Writes what came of several candidates in one transaction: candidates, planes, stamps and the fate of each file. A candidate
  * whose files another process has settled meanwhile is left out, so that doing the same work twice changes nothing; so is one
  * that has other planes now than it was to be drawn with, whose files are read again and whose pictures are asked for again.
+ * What a power cut takes of it is seen in the fate of the files and read again, so it does not wait for the disk.
  */
 export async function commitOutcomes(
   db: Kysely<DB>,
+  campaigned: Campaigned,
+  outcomes: readonly CandidateOutcome[],
+  factsOf: (name: string) => ManifestFacts | undefined,
+): Promise<void> {
+  await unsynced(db, (connection) =>
+    connection.transaction().execute((transaction) => write(transaction, campaigned, outcomes, factsOf)),
+  )
+}
+
+async function write(
+  transaction: Kysely<DB>,
   { campaignId, recipeId }: Campaigned,
   outcomes: readonly CandidateOutcome[],
   factsOf: (name: string) => ManifestFacts | undefined,
 ): Promise<void> {
-  await db.transaction().execute(async (transaction) => {
-    const now = isoTime()
-    const waiting = await listStillWaiting(
-      transaction,
-      outcomes.flatMap(({ files }) => files.map(({ id }) => id)),
-    )
-    const due = outcomes.filter(({ files }) => files.every(({ id }) => waiting.has(id)))
-    const overtaken = await findOvertaken(transaction, campaignId, due)
-    const standing = due.filter((outcome) => !overtaken.has(outcome))
-    const known = standing.filter(({ planes, stamps }) => planes.length > 0 || stamps !== null)
-    const facts = known.map((outcome) => candidateFacts(outcome, factsOf(outcome.name), now))
-    const ids = await upsertCandidates(transaction, campaignId, facts, now)
-    const idOf = (name: string): number => {
-      const id = ids.get(name)
-      if (id === undefined) throw new Error(`Candidate ${name} was not written`)
-      return id
-    }
-    const read = standing.flatMap(({ files }) => files.flatMap(({ id, fate }) => (fate === 'refused' ? [] : id)))
-    const replaced = await deletePlanesOfReplaced(transaction, read)
-    await releaseDuplicates(transaction, await listReplacedBy(transaction, read), now)
-    const planes = known.flatMap(({ name, planes }) => planes.map((plane) => ({ ...plane, candidateId: idOf(name) })))
-    await upsertPlanes(transaction, planes)
-    const imaged = known.flatMap(({ name, stamps }) => (stamps === null ? [] : { id: idOf(name), name, stamps }))
-    const stamps = imaged.flatMap(({ id, stamps }) => stamps.map((stamp) => ({ ...stamp, candidateId: id })))
-    await replaceStamps(
-      transaction,
-      campaignId,
-      recipeId,
-      imaged.map(({ id }) => id),
-      stamps,
-    )
-    await setFates(transaction, standing, now)
-    await setFilesImaged(
-      transaction,
-      imaged.map(({ id }) => id),
-      NOT_IMAGED,
-      now,
-    )
-    const done = new Set(imaged.map(({ id }) => id))
-    const redrawn = imaged.filter(({ name }) => standing.some((one) => one.name === name && one.planes.length > 0))
-    const isLate = await deleteLaterStamps(
-      transaction,
-      redrawn.map(({ id }) => id),
-      recipeId,
-    )
-    const drawAgain = [...overtaken].some(({ files }) => files.length === 0)
-    if (isLate || drawAgain) await requestImaging(transaction, campaignId)
-    await imageLater(
-      transaction,
-      campaignId,
-      replaced.filter((id) => !done.has(id)),
-    )
-  })
+  const now = isoTime()
+  const waiting = await listStillWaiting(
+    transaction,
+    outcomes.flatMap(({ files }) => files.map(({ id }) => id)),
+  )
+  const due = outcomes.filter(({ files }) => files.every(({ id }) => waiting.has(id)))
+  const overtaken = await findOvertaken(transaction, campaignId, due)
+  const standing = due.filter((outcome) => !overtaken.has(outcome))
+  const known = standing.filter(({ planes, stamps }) => planes.length > 0 || stamps !== null)
+  const facts = known.map((outcome) => candidateFacts(outcome, factsOf(outcome.name), now))
+  const ids = await upsertCandidates(transaction, campaignId, facts, now)
+  const idOf = (name: string): number => {
+    const id = ids.get(name)
+    if (id === undefined) throw new Error(`Candidate ${name} was not written`)
+    return id
+  }
+  const read = standing.flatMap(({ files }) => files.flatMap(({ id, fate }) => (fate === 'refused' ? [] : id)))
+  const replaced = await deletePlanesOfReplaced(transaction, read)
+  await releaseDuplicates(transaction, await listReplacedBy(transaction, read), now)
+  const planes = known.flatMap(({ name, planes }) => planes.map((plane) => ({ ...plane, candidateId: idOf(name) })))
+  await upsertPlanes(transaction, planes)
+  const imaged = known.flatMap(({ name, stamps }) => (stamps === null ? [] : { id: idOf(name), name, stamps }))
+  const stamps = imaged.flatMap(({ id, stamps }) => stamps.map((stamp) => ({ ...stamp, candidateId: id })))
+  await replaceStamps(
+    transaction,
+    campaignId,
+    recipeId,
+    imaged.map(({ id }) => id),
+    stamps,
+  )
+  await setFates(transaction, standing, now)
+  await setFilesImaged(
+    transaction,
+    imaged.map(({ id }) => id),
+    NOT_IMAGED,
+    now,
+  )
+  const done = new Set(imaged.map(({ id }) => id))
+  const redrawn = imaged.filter(({ name }) => standing.some((one) => one.name === name && one.planes.length > 0))
+  const isLate = await deleteLaterStamps(
+    transaction,
+    redrawn.map(({ id }) => id),
+    recipeId,
+  )
+  const drawAgain = [...overtaken].some(({ files }) => files.length === 0)
+  if (isLate || drawAgain) await requestImaging(transaction, campaignId)
+  await imageLater(
+    transaction,
+    campaignId,
+    replaced.filter((id) => !done.has(id)),
+  )
 }
 
 const keyOf = ({ band, hdu, planeIndex, fileId }: PlannedPlane): string => `${band} ${hdu} ${planeIndex} ${fileId}`

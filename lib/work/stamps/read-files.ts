@@ -29,6 +29,7 @@ export async function readFiles(tools: ImagingTools, campaignId: number, progres
   const reading = new Reading(tools, campaignId, progress)
   // Files can go back to 'stored' behind the pages already seen, so it ends only when a look from the start finds nothing.
   while (await reading.readAll()) reading.startOver()
+  await reading.tellAll()
 }
 
 class Reading {
@@ -142,8 +143,12 @@ class Reading {
 
   async #tell(settled: number): Promise<void> {
     this.#done += settled
-    // Each report is a synced write: four a second are enough to watch.
-    if (settled > 0 && Date.now() - this.#reported < 250 && this.#done < this.#total) return
+    // Each report is a write: two a second are enough to watch.
+    if (Date.now() - this.#reported < 500) return
+    await this.tellAll()
+  }
+
+  async tellAll(): Promise<void> {
     this.#reported = Date.now()
     this.#total = Math.max(this.#total, this.#done)
     await this.progress(this.#done, this.#total)
