@@ -1,6 +1,7 @@
 import { sql, type Insertable, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { GradeRow, GradeTable } from '../schema/grading'
+import type { IsoTime } from '../schema/values'
 import { among, inCampaign } from './by-ids'
 
 /** Those of the candidates that belong to the campaign. */
@@ -20,13 +21,13 @@ export async function listCandidatesAmong(
 
 /**
  * The one condition of what a grader may see: of `grade` as `own`, a standing answer of the person, on any occasion, that is a
- * grade and not 'cannot judge', where no lead waits for another look of theirs.
+ * grade and not 'cannot judge', where no lead waits for another look of theirs. `person` is a number or a column.
  */
-export function isOwnJudgement(personId: number): RawBuilder<SqlBool> {
-  return sql<SqlBool>`+own.person_id = ${personId} and own.grade != 'U'
+export function isOwnJudgement(person: number | RawBuilder<number>): RawBuilder<SqlBool> {
+  return sql<SqlBool>`+own.person_id = ${person} and own.grade != 'U'
     and not exists (select 1 from grade newer where newer.replaces = own.id)
     and not exists (select 1 from asked_look ask where ask.candidate_id = own.candidate_id
-      and ask.person_id = ${personId} and ask.grade_id is null and ask.withdrawn_at is null)`
+      and ask.person_id = ${person} and ask.grade_id is null and ask.withdrawn_at is null)`
 }
 
 /** Those of the candidates that the person has judged. */
@@ -139,6 +140,48 @@ export async function isJudgementShown(db: Kysely<DB>, candidateId: number, pers
     .select('at')
     .where('person_id', '=', personId)
     .where('candidate_id', '=', candidateId)
+    .executeTakeFirst()
+  return row !== undefined
+}
+
+export interface RunPace {
+  ruleId: number
+  newestGradeId: number
+  /** How many grades the run counted. */
+  grades: number
+  at: IsoTime
+}
+
+/** When the campaign's newest run was, and how much it read. */
+export async function findRunPace(db: Kysely<DB>, campaignId: number): Promise<RunPace | null> {
+  const row = await db
+    .selectFrom('run')
+    .select(['rule_id as ruleId', 'newest_grade_id as newestGradeId', 'created_at as at'])
+    .select(sql<number>`coalesce(summary ->> 'grades', 0)`.as('grades'))
+    .where('campaign_id', '=', campaignId)
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
+/**
+ * Whether any imaged candidate has fewer looks than wanted, or where looks end with settling, one of any worth. What a ruling has
+ * decided counts as wanting; each is one step in an index.
+ */
+export async function wantsAnyLook(
+  db: Kysely<DB>,
+  campaignId: number,
+  gradesWanted: number,
+  untilSettled: boolean,
+): Promise<boolean> {
+  const row = await db
+    .selectFrom('candidate')
+    .select('id')
+    .where('campaign_id', '=', campaignId)
+    .where('imaged_at', 'is not', null)
+    .where(untilSettled ? sql<SqlBool>`settled = 0 and look_value > 0` : sql<SqlBool>`grades_given < ${gradesWanted}`)
+    .limit(1)
     .executeTakeFirst()
   return row !== undefined
 }
