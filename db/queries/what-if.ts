@@ -6,7 +6,6 @@ import { among, inCampaign } from './by-ids'
 export interface CandidateForWhatIf {
   id: number
   state: CandidateState
-  truth: 'lens' | 'not a lens' | null
   /** 1 where a ruling stands over verdicts */
   ruled: 0 | 1
 }
@@ -14,15 +13,16 @@ export interface CandidateForWhatIf {
 /** A page of the campaign's candidates by id, calibration stamps among them. */
 export async function listForWhatIf(
   db: Kysely<DB>,
-  page: { campaignId: number; after: number; limit: number },
+  page: { campaignId: number; after: number; upTo: number; limit: number },
 ): Promise<CandidateForWhatIf[]> {
   return (
     db
       .selectFrom('candidate')
       .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
-      .select(['candidate.id', 'candidate.state', 'candidate.truth'])
+      .select(['candidate.id', 'candidate.state'])
       .select(sql<0 | 1>`ruling.outcome is not null and ruling.outcome <> 'by verdict'`.as('ruled'))
       .where('candidate.id', '>', page.after)
+      .where('candidate.id', '<=', page.upTo)
       // The plus keeps SQLite on the primary key: by an index on the campaign it would sort the whole campaign for each page.
       .where(inCampaign('candidate.campaign_id', page.campaignId))
       .orderBy('candidate.id')

@@ -2,12 +2,12 @@
 // A word after it chooses: npm run bench -- imaging
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
+import { benchConsensus } from './bench-consensus'
 import { benchImaging } from './bench-imaging'
 import { benchIntake } from './bench-intake'
 import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
-import { benchReliability } from './bench-reliability'
 import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, () => Promise<string[]>> = {
@@ -17,7 +17,7 @@ const BENCHES: Record<string, () => Promise<string[]>> = {
   match: benchMatch,
   votable: benchVotable,
   lens: benchLens,
-  reliability: () => benchReliability(),
+  consensus: benchConsensus,
 }
 
 process.env.RINGSIDE_PEERS ??= 'fixtures/peers'

@@ -2,8 +2,6 @@
  * All candidates of a campaign as flat columns, so that a rule can be tried on them in the browser, and how they travel: the
  * length of a JSON head, the head, and the columns one after the other, little-endian as every browser's typed arrays.
  */
-import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
-import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import type { CandidateTallies } from '@/lib/science/agreement/outcomes-at-once'
 import { logOddsOf, probabilityOf } from '@/lib/science/agreement/posterior'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
@@ -44,9 +42,6 @@ export function withProbabilities(rows: WhatIfRows): WhatIfColumns {
   const prior = lensShare === null ? NaN : logOddsOf(lensShare)
   return { ...rows, probabilities: rows.tallies.evidence.map((evidence) => probabilityOf(prior + evidence)) }
 }
-
-export const truthCode = (truth: 'lens' | 'not a lens' | null): number =>
-  truth === null ? UNKNOWN_TRUTH : truth === 'lens' ? LENS : NOT_A_LENS
 
 /** Columns in the order in which they travel: those of 8 bytes first, so that each begins at a multiple of its own width. */
 function columnsOf({ ids, state, ruled, truth, tallies }: WhatIfRows) {

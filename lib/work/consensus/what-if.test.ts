@@ -76,6 +76,25 @@ describe('readWhatIf', () => {
     expect(again.changed).toBe(0)
   })
 
+  it('goes by the reliabilities of the newest run where it has some, and then foretells that run to the candidate', async () => {
+    const { db } = scenario
+    const rule = RuleInput.parse({ method: 'reliability', gradesWanted: 4, leastGrades: 1, falseConfirmed: 0.1 })
+    await changeRule(db, await lead(), rule)
+    const before = await readWhatIf(db, await lead())
+    await runConsensus(db, await lead())
+    const columns = withProbabilities(await readWhatIf(db, await lead()))
+    expect(before.about.reliabilities).toEqual({ from: 'fit' })
+    expect(columns.about.reliabilities).toMatchObject({ from: 'run' })
+    expect([...columns.tallies.evidence]).toEqual([...before.tallies.evidence])
+    const trial = tryRule(columns, rule)
+    expect(trial.changed).toBe(0)
+    expect(trial.then.open).toBeLessThan(4)
+    const estimates = await db.selectFrom('estimate').select(['candidate_id as id', 'probability']).execute()
+    for (const { id, probability } of estimates) {
+      expect(columns.probabilities[columns.ids.indexOf(id)]).toBeCloseTo(probability, 12)
+    }
+  })
+
   it('counts a correction once and nothing of a grader who is left out', async () => {
     const { db, campaign, graders, lead: decider } = scenario
     const grade = await db.selectFrom('grade').select('id').where('candidate_id', '=', ids[0]).executeTakeFirstOrThrow()

@@ -2,26 +2,26 @@ import 'server-only'
 import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { listThumbnails } from '@/db/queries/catalogue'
-import { findNewestRun, listCountedAnswers, newestInput } from '@/db/queries/consensus'
-import { listLeftOutNow } from '@/db/queries/left-out'
+import { findNewestRun, listLeftOutPeople, newestInput } from '@/db/queries/consensus'
 import { countGradesAfter, listForWhatIf, listNamesOf, type CandidateForWhatIf } from '@/db/queries/what-if'
 import type { DB } from '@/db/schema'
 import type { RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
-import { fitDawidSkene } from '@/lib/science/agreement/dawid-skene'
-import { gradeCode, groupByCandidate, type GradesByCandidate } from '@/lib/science/agreement/grade-table'
-import { LENS, LENS_MODEL, ratesOfGraders, type GraderRates } from '@/lib/science/agreement/lens-model'
-import { OUTCOMES, tallyCandidates } from '@/lib/science/agreement/outcomes-at-once'
+import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
+import { OUTCOMES, tallyCandidates, type CandidateTallies } from '@/lib/science/agreement/outcomes-at-once'
 import { conflict } from '@/lib/platform/problems/problem'
 import { changeRule } from '@/lib/work/campaigns/change-settings'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
-import { truthCode, type WhatIfAbout, type WhatIfRows } from './what-if-columns'
+import { fitModel } from './fit-model'
+import { InputDigest } from './input-digest'
+import { readGrades } from './read-grades'
+import type { WhatIfAbout, WhatIfRows } from './what-if-columns'
 
-/** Candidates read before other work of the process gets its turn. */
-const PAGE = 500
+/** States read before other work of the process gets its turn. */
+const PAGE = 2000
 
 /**
  * Every candidate of the campaign in numbers, from the grades that count now: all that a rule needs to be tried without asking the
@@ -31,30 +31,48 @@ export async function readWhatIf(db: Kysely<DB>, permit: CampaignPermit<'lead'>)
   const { id: campaignId } = permit.campaign
   const rule = await ruleInForce(db, campaignId)
   const run = await findNewestRun(db, campaignId)
-  const leftOut = new Set((await listLeftOutNow(db, campaignId)).map(({ personId }) => personId))
-  const read = await readGrades(db, campaignId, leftOut)
-  const { rows, people, cannotJudge, table } = read
-  const truth = Int8Array.from(rows, (row) => truthCode(row.truth))
-  const model = run?.model ? fromJson(run.model) : null
-  const { lensShare, rates } = model ? ratesOfRun(model, people) : fitNow(table, truth)
-  const from: WhatIfAbout['reliabilities'] =
-    model && run ? { from: 'run', runId: run.id, at: run.created_at } : table.cell.length > 0 ? { from: 'fit' } : null
+  const newest = await newestInput(db, campaignId)
+  const leftOut = await listLeftOutPeople(db, campaignId, newest.newestLeftOutId)
+  const grades = await readGrades(
+    db,
+    { campaignId, ...newest },
+    { leftOut: new Set(leftOut), withCalibration: true, digest: new InputDigest(rule, leftOut) },
+  )
+  const known = run?.model ? fromJson(run.model) : null
+  const model = known ?? (await fitModel(grades, leftOut))
+  const tallies = tallyCandidates(grades.table, ratesOf(model, grades.people), grades.cannotJudge)
+  const states = await readStates(db, campaignId, newest.newestCandidateId)
+  const { truth, ids } = grades
+  const rows = Array.from(ids.keys())
+  const order = [
+    ...rows.filter((row) => truth[row] === UNKNOWN_TRUTH),
+    ...rows.filter((row) => truth[row] !== UNKNOWN_TRUTH),
+  ]
+  const reliabilities = reliabilitiesOf(known && run, grades.table.cell.length > 0)
   return {
     about: {
       rule: ruleAlone(rule),
-      lensShare: from ? lensShare : null,
-      reliabilities: from,
+      lensShare: reliabilities ? model.lensShare : null,
+      reliabilities,
       gradesSinceRun: run ? await countGradesAfter(db, campaignId, run.newest_grade_id) : null,
-      graders: people.length,
-      leftOut: leftOut.size,
+      graders: grades.people.length,
+      leftOut: leftOut.length,
     },
-    candidates: rows.findLastIndex((row) => row.truth === null) + 1,
-    ids: Int32Array.from(rows, (row) => row.id),
-    state: Uint8Array.from(rows, (row) => OUTCOMES.indexOf(row.state)),
-    ruled: Uint8Array.from(rows, (row) => row.ruled),
-    truth,
-    tallies: tallyCandidates(table, rates, cannotJudge),
+    candidates: rows.reduce((sum, row) => sum + (truth[row] === UNKNOWN_TRUTH ? 1 : 0), 0),
+    ids: Int32Array.from(order, (row) => ids[row]),
+    state: Uint8Array.from(order, (row) => OUTCOMES.indexOf(states.get(ids[row])?.state ?? 'open')),
+    ruled: Uint8Array.from(order, (row) => states.get(ids[row])?.ruled ?? 0),
+    truth: Int8Array.from(order, (row) => truth[row]),
+    tallies: inOrder(tallies, order),
   }
+}
+
+function reliabilitiesOf(
+  run: { id: number; created_at: string } | null | undefined,
+  anyGrade: boolean,
+): WhatIfAbout['reliabilities'] {
+  if (run) return { from: 'run', runId: run.id, at: run.created_at }
+  return anyGrade ? { from: 'fit' } : null
 }
 
 function ruleAlone(rule: RuleInForce): RuleInput & { version: number } {
@@ -67,59 +85,32 @@ function ruleAlone(rule: RuleInForce): RuleInput & { version: number } {
   return { method, version, gradesWanted, leastGrades, falseConfirmed, missedLens }
 }
 
-interface ReadGrades {
-  /** candidates of the search, then calibration stamps, each by id */
-  rows: CandidateForWhatIf[]
-  /** graders in order of their number in the table */
-  people: number[]
-  cannotJudge: Uint16Array
-  table: GradesByCandidate
-}
-
-async function readGrades(db: Kysely<DB>, campaignId: number, leftOut: ReadonlySet<number>): Promise<ReadGrades> {
-  const { newestGradeId: upTo } = await newestInput(db, campaignId)
-  const found: CandidateForWhatIf[] = []
-  const answers: { candidateId: number; grader: number; grade: number }[] = []
-  const graderOf = new Map<number, number>()
-  for (;;) {
-    const page = await listForWhatIf(db, { campaignId, after: found.at(-1)?.id ?? 0, limit: PAGE })
-    const last = page.at(-1)
-    if (!last) break
-    for (const answer of await listCountedAnswers(db, { campaignId, from: page[0].id, to: last.id, upTo })) {
-      if (leftOut.has(answer.personId)) continue
-      const grader = graderOf.get(answer.personId) ?? graderOf.size
-      graderOf.set(answer.personId, grader)
-      answers.push({ candidateId: answer.candidateId, grader, grade: gradeCode(answer.grade) })
-    }
-    found.push(...page)
-    await nextTurn()
-  }
-  const rows = [...found.filter(({ truth }) => truth === null), ...found.filter(({ truth }) => truth !== null)]
-  const rowOf = new Map(rows.map(({ id }, row) => [id, row]))
-  const flat = {
-    candidates: rows.length,
-    graders: graderOf.size,
-    grades: 4,
-    candidateOf: Int32Array.from(answers, ({ candidateId }) => rowOf.get(candidateId) ?? -1),
-    graderOf: Int32Array.from(answers, ({ grader }) => grader),
-    gradeOf: Uint8Array.from(answers, ({ grade }) => grade),
-  }
-  const cannotJudge = new Uint16Array(rows.length)
-  const judged = gradeCode('U')
-  flat.gradeOf.forEach((grade, entry) => {
-    if (grade === judged) cannotJudge[flat.candidateOf[entry]] += 1
-  })
-  return { rows, people: [...graderOf.keys()], cannotJudge, table: groupByCandidate(flat) }
-}
-
-function ratesOfRun(model: RunModel, people: readonly number[]): { lensShare: number; rates: GraderRates[] } {
+/** Of each grader of the table; somebody whom the model does not know grades like a newcomer. */
+function ratesOf(model: RunModel, people: readonly number[]) {
   const known = new Map(model.graders.map((grader) => [grader.personId, grader]))
-  return { lensShare: model.lensShare, rates: people.map((personId) => known.get(personId) ?? model.newcomer) }
+  return people.map((personId) => known.get(personId) ?? model.newcomer)
 }
 
-function fitNow(table: GradesByCandidate, truth: Int8Array): { lensShare: number; rates: GraderRates[] } {
-  const fit = fitDawidSkene(table, { ...LENS_MODEL, truth })
-  return { lensShare: fit.classShares[LENS], rates: ratesOfGraders(fit) }
+async function readStates(db: Kysely<DB>, campaignId: number, upTo: number): Promise<Map<number, CandidateForWhatIf>> {
+  const states = new Map<number, CandidateForWhatIf>()
+  for (let after = 0; ; await nextTurn()) {
+    const page = await listForWhatIf(db, { campaignId, after, upTo, limit: PAGE })
+    for (const candidate of page) states.set(candidate.id, candidate)
+    const last = page.at(-1)
+    if (!last) return states
+    after = last.id
+  }
+}
+
+function inOrder(tallies: CandidateTallies, order: readonly number[]): CandidateTallies {
+  const { looks, grades, points, squaredPoints, evidence } = tallies
+  return {
+    looks: Uint16Array.from(order, (row) => looks[row]),
+    grades: Uint16Array.from(order, (row) => grades[row]),
+    points: Float64Array.from(order, (row) => points[row]),
+    squaredPoints: Float64Array.from(order, (row) => squaredPoints[row]),
+    evidence: Float64Array.from(order, (row) => evidence[row]),
+  }
 }
 
 export interface ShownCandidate {
