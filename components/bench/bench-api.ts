@@ -1,7 +1,9 @@
 /** What the bench says to the server. Every other file of the bench works without a network. */
 import type { GradeLetter } from '@/db/schema/grading'
+import type { OwnAnswer } from '@/lib/work/grading/own-answer'
 import type { PERSON_HEADER } from '@/lib/work/people/person-header'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
+import type { Answer } from './bench-session'
 
 export interface GradeBody {
   id: string
@@ -18,11 +20,12 @@ export interface GradeBody {
 }
 
 export type SendOutcome =
-  | { outcome: 'saved' }
+  /** `replaced`: the server had another grade of this person there, which this one corrected. */
+  | { outcome: 'saved'; replaced?: boolean }
   /** The server understood and said no: asking again will not help. */
   | { outcome: 'refused'; sentence: string }
-  /** To be tried again; the sentence says why it has not worked. */
-  | { outcome: 'trouble'; sentence: string }
+  /** To be tried again; the sentence says why it has not worked, and signing in may mend it. */
+  | { outcome: 'trouble'; sentence: string; signIn?: true }
 
 /** Whose bench this is: the server takes nothing of it for anybody else who has signed in beside it. */
 export interface BenchOwner {
@@ -34,6 +37,9 @@ export interface BenchOwner {
 const HEADER: typeof PERSON_HEADER = 'ringside-person'
 
 const whose = ({ personId }: BenchOwner) => ({ [HEADER]: String(personId) })
+
+/** Longer than any answer takes, on a slow network too. */
+const ANSWER_MS = 30_000
 
 const root = (slug: string) => `/api/campaigns/${encodeURIComponent(slug)}`
 
@@ -52,15 +58,21 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
       body: JSON.stringify(body),
       // Finishes even when the page is closed meanwhile.
       keepalive: true,
+      // A connection that says nothing must not hold up the tabs that wait for their turn.
+      signal: AbortSignal.timeout(ANSWER_MS),
     })
   } catch {
     return { outcome: 'trouble', sentence: 'The server cannot be reached.' }
   }
-  if (response.ok) return { outcome: 'saved' }
+  if (response.ok) {
+    const { replaced } = (await response.json().catch(() => ({}))) as { replaced?: unknown }
+    return { outcome: 'saved', replaced: typeof replaced === 'string' }
+  }
   if (response.status === 401) {
     return {
       outcome: 'trouble',
-      sentence: 'You are signed out. Sign in again in another tab; this one goes on by itself.',
+      sentence: 'You are signed out. What waits is kept and goes as soon as you are back.',
+      signIn: true,
     }
   }
   if (response.status >= 500 || response.status === 429 || response.status === 408) {
@@ -71,7 +83,7 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
     return {
       outcome: 'trouble',
       sentence:
-        'Somebody else has signed in in this browser. Your grades are kept here: sign in again as yourself in another tab; this one goes on by itself.',
+        'Somebody else has signed in in this browser. Your grades are kept here and go only once you are signed in again as yourself, in another tab.',
     }
   }
   return { outcome: 'refused', sentence }
@@ -82,6 +94,25 @@ export async function askQueue(owner: BenchOwner, count: number): Promise<LentQu
   const response = await fetch(`${root(owner.slug)}/queue?count=${count}`, { cache: 'no-store', headers: whose(owner) })
   if (!response.ok) throw new Error((await problemOf(response)).sentence)
   return (await response.json()) as LentQueue
+}
+
+/**
+ * What stands of the person's own at the server, and whether it may still be corrected.
+ * @throws Error when nothing usable comes back.
+ */
+export async function askOwnAnswer(
+  owner: BenchOwner,
+  candidateId: number,
+): Promise<{ answer: Answer | null; open: boolean }> {
+  const response = await fetch(`${root(owner.slug)}/candidates/${candidateId}/grade`, {
+    cache: 'no-store',
+    headers: whose(owner),
+  })
+  if (!response.ok) throw new Error((await problemOf(response)).sentence)
+  const { answer, open } = (await response.json()) as OwnAnswer
+  if (!answer) return { answer, open }
+  const { grade, tags, reason, remark } = answer
+  return { answer: { grade, tags, reason, remark: remark ?? '' } as Answer, open }
 }
 
 /** Best effort: a lease that is not given back runs out by itself. */

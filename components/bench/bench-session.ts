@@ -5,6 +5,8 @@
 import type { GradeLetter } from '@/db/schema/grading'
 import type { CannotJudgeReason, Tag } from '@/lib/work/grading/tags'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
+import { firstView } from './first-view'
+import { corrected, foundWaiting, givenElsewhere, recalled } from './session-recall'
 
 export interface Draft {
   tags: Tag[]
@@ -77,6 +79,11 @@ export type BenchAction =
   | { type: 'correction refused'; candidateId: number; before: Answer }
   /** Grades of an earlier visit that are still on their way, found when the page opened. */
   | { type: 'found waiting'; candidateIds: number[]; firsts: number }
+  | { type: 'given elsewhere'; grades: { candidateId: number; answer: Answer; first: boolean }[] }
+  /** From before a reload. */
+  | { type: 'recalled'; looks: Look[]; drafts: Record<number, Draft> }
+  /** The server has another answer than was remembered, or none. */
+  | { type: 'stands'; candidateId: number; answer: Answer | null }
 
 export const EMPTY_DRAFT: Draft = { tags: [], remark: '' }
 
@@ -92,11 +99,6 @@ export function openSession(supplied: Supplied): BenchSession {
     last: null,
     ...firstView(supplied.candidates[0]),
   }
-}
-
-function firstView(candidate: BenchCandidate | undefined): Pick<BenchSession, 'view' | 'previousView'> {
-  const shown = candidate?.views.find(({ url }) => url !== null) ?? candidate?.views[0]
-  return { view: shown?.key ?? null, previousView: null }
 }
 
 export function currentLook(session: BenchSession): { candidate: BenchCandidate; answer: Answer | null } | null {
@@ -155,14 +157,19 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
       return refused(session, action.candidateId)
     case 'correction refused':
       return {
-        ...session,
-        given: session.given.map((look) =>
-          look.candidate.id === action.candidateId ? { ...look, answer: action.before } : look,
-        ),
+        ...corrected(session, action.candidateId, action.before),
         last: session.last?.candidateId === action.candidateId ? null : session.last,
       }
     case 'found waiting':
-      return foundWaiting(session, action)
+      return foundWaiting(session, action.candidateIds, action.firsts)
+    case 'given elsewhere':
+      return givenElsewhere(session, action.grades)
+    case 'recalled':
+      return recalled(session, action.looks, action.drafts)
+    case 'stands':
+      return action.answer
+        ? corrected(session, action.candidateId, action.answer)
+        : refused(session, action.candidateId)
   }
 }
 
@@ -177,8 +184,8 @@ function graded(session: BenchSession, { answer, view, seconds }: BenchAction & 
   const drafts = without(session.drafts, candidateId)
   if (look.answer) {
     const same = sameAnswer(look.answer, answer)
-    const corrected = { candidate: look.candidate, answer, view, seconds }
-    const given = session.given.map((old) => (old.candidate.id === candidateId ? corrected : old))
+    const anew = { candidate: look.candidate, answer, view, seconds }
+    const given = session.given.map((old) => (old.candidate.id === candidateId ? anew : old))
     const last = { what: same ? ('kept' as const) : ('corrected' as const), candidateId }
     return { ...session, given, drafts, lookingBack: null, last, ...firstView(session.upcoming[0]) }
   }
@@ -272,14 +279,4 @@ function refused(session: BenchSession, candidateId: number): BenchSession {
     last: session.last?.candidateId === candidateId ? null : session.last,
     ...(lookingBack === index ? firstView(session.upcoming[0]) : {}),
   }
-}
-
-function foundWaiting(
-  session: BenchSession,
-  { candidateIds, firsts }: BenchAction & { type: 'found waiting' },
-): BenchSession {
-  const upcoming = session.upcoming.filter(({ id }) => !candidateIds.includes(id))
-  const { given, left } = session.counts
-  const counts = { given: given + firsts, left: Math.max(upcoming.length, left - firsts) }
-  return { ...session, upcoming, counts, ...firstView(upcoming[0]) }
 }

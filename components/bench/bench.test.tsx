@@ -1,63 +1,22 @@
-import { act, fireEvent, render, screen, waitFor, within } from '@testing-library/react'
+import { fireEvent, render, screen, waitFor } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
-import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { describe, expect, it } from 'vitest'
+import { freshRoom, grades, look, name, open, pause, room, saved } from './_bench-room'
 import { benchCandidate, supply } from './_candidates'
 import { Bench } from './bench'
 
-interface Sent {
-  url: string
-  method: string
-  body: Record<string, unknown> | null
-  person: string | null
-}
-
-let sent: Sent[]
-let answerGrade: () => Response | Promise<Response>
-let queue: ReturnType<typeof supply>
-
-beforeEach(() => {
-  sent = []
-  queue = supply([1, 2, 3])
-  answerGrade = () => Response.json({})
-  localStorage.clear()
-  vi.stubGlobal('fetch', async (url: string, init: RequestInit = {}) => {
-    const method = init.method ?? 'GET'
-    const body = init.body ? (JSON.parse(String(init.body)) as Record<string, unknown>) : null
-    sent.push({ url, method, body, person: new Headers(init.headers).get('ringside-person') })
-    if (method === 'PUT') return answerGrade()
-    return Response.json(method === 'GET' ? { ...queue, until: '' } : {})
-  })
-})
-afterEach(() => vi.unstubAllGlobals())
-
-const grades = () => sent.filter(({ method }) => method === 'PUT')
-const name = () => screen.getByRole('heading', { level: 1 }).textContent
-const saved = () => document.querySelector('[data-save-line]')?.textContent
-
-/** Pictures arrive, and longer passes than a key takes to bounce. */
-async function look(): Promise<void> {
-  for (const image of document.querySelectorAll('figure img')) fireEvent.load(image)
-  await act(() => new Promise((resolve) => setTimeout(resolve, 140)))
-}
-
-async function open(first = queue) {
-  const user = userEvent.setup()
-  const view = render(
-    <Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...first, until: '' }} />,
-  )
-  await look()
-  return { user, ...view }
-}
+freshRoom()
 
 describe('the bench', () => {
   it('grades by key, shows the next at once, confirms, and sends in the background', async () => {
     let release = () => {}
-    answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
     const { user } = await open()
     await user.keyboard('b')
     expect(name()).toBe('SWS-2')
     expect(screen.getByText(/given to/)).toHaveTextContent('given to SWS-1')
     expect(saved()).toBe('1 waiting')
+    await waitFor(() => expect(grades()).not.toHaveLength(0))
     release()
     await waitFor(() => expect(saved()).toBe('All grades saved'))
     expect(grades()).toMatchObject([
@@ -88,8 +47,10 @@ describe('the bench', () => {
 
   it('takes no judgement of a picture that has not arrived, but takes cannot judge', async () => {
     const user = userEvent.setup()
-    render(<Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...queue, until: '' }} />)
-    await act(() => new Promise((resolve) => setTimeout(resolve, 140)))
+    render(
+      <Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...room.queue, until: '' }} />,
+    )
+    await pause(140)
     await user.keyboard('a')
     expect(name()).toBe('SWS-1')
     expect(screen.getByText(/still on its way/)).toBeInTheDocument()
@@ -106,7 +67,7 @@ describe('the bench', () => {
     expect(screen.queryByRole('textbox')).not.toBeInTheDocument()
     await user.keyboard('a second line')
     expect(grades(), 'whoever types on after Enter means words, not grades').toHaveLength(0)
-    await act(() => new Promise((resolve) => setTimeout(resolve, 550)))
+    await pause(550)
     await user.keyboard('c')
     await waitFor(() => expect(grades()).toHaveLength(1))
     expect(grades()[0].body?.remark).toBe('a blue curve, can be N\nx')
@@ -185,84 +146,6 @@ describe('the bench', () => {
     await user.keyboard('{/x}')
     expect(shown()).toBe('SWS-1, deep')
   })
-
-  it('tries again after a failure and never loses the grade', async () => {
-    let failures = 1
-    answerGrade = () => (failures-- > 0 ? new Response(null, { status: 503 }) : Response.json({}))
-    const { user } = await open()
-    await user.keyboard('a')
-    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. The server has trouble/))
-    const leaving = new Event('beforeunload', { cancelable: true })
-    window.dispatchEvent(leaving)
-    expect(leaving.defaultPrevented).toBe(true)
-    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
-    expect(grades()[0].body?.id).toBe(grades()[1].body?.id)
-  })
-
-  it('after a reload sends what was left and does not show its candidate again, whatever the server lends', async () => {
-    answerGrade = () => new Response(null, { status: 503 })
-    const { user, unmount } = await open()
-    await user.keyboard('a')
-    await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
-    unmount()
-    let release = () => {}
-    answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
-    await open()
-    expect(name()).toBe('SWS-2')
-    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuetext', '1 of 3')
-    release()
-    await waitFor(() => expect(saved()).toBe('All grades saved'))
-    expect(new Set(grades().map(({ body }) => body?.id)).size).toBe(1)
-  })
-
-  it('shows in words what the server refused, and does not count it', async () => {
-    const detail = 'Others have filled this candidate.'
-    answerGrade = () => Response.json({ detail }, { status: 409 })
-    const { user } = await open()
-    await user.keyboard('a')
-    const alert = await screen.findByRole('alert')
-    expect(alert).toHaveTextContent(`SWS-1, your A: ${detail}`)
-    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '0')
-    await user.click(within(alert).getByRole('button', { name: 'I have read this' }))
-    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
-    expect(grades()).toHaveLength(1)
-  })
-
-  it('shows in words why a correction was refused, goes on, and looks back at what stands', async () => {
-    const detail = "You have seen the others' grades of this candidate since, so yours stands as you gave it."
-    const { user } = await open()
-    await user.keyboard('a')
-    await waitFor(() => expect(saved()).toBe('All grades saved'))
-    await look()
-    answerGrade = () => Response.json({ type: 'urn:ringside:problem:judgement-seen', detail }, { status: 409 })
-    await user.keyboard('z')
-    await look()
-    await user.keyboard('n')
-    expect(await screen.findByRole('alert')).toHaveTextContent(`SWS-1, your N: ${detail}`)
-    expect(name()).toBe('SWS-2')
-    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '1')
-    await user.keyboard('z')
-    expect(screen.getByRole('button', { name: /^A: Sure/ })).toHaveAttribute('aria-pressed', 'true')
-  })
-
-  it('says whose it is with everything it sends', async () => {
-    const { user, unmount } = await open()
-    await user.keyboard('a')
-    unmount()
-    await waitFor(() => expect(sent.at(-1)?.method).toBe('DELETE'))
-    expect(new Set(sent.map(({ method }) => method))).toEqual(new Set(['GET', 'PUT', 'DELETE']))
-    expect(new Set(sent.map(({ person }) => person))).toEqual(new Set(['7']))
-  })
-
-  it('keeps a grade, with a sentence, while somebody else is signed in, and sends it when the person is back', async () => {
-    answerGrade = () => Response.json({ type: 'urn:ringside:problem:other-person', detail: '' }, { status: 409 })
-    const { user } = await open()
-    await user.keyboard('a')
-    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. Somebody else has signed in in this browser/))
-    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
-    answerGrade = () => Response.json({})
-    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
-  })
 })
 
 describe('the keys', () => {
@@ -295,9 +178,9 @@ describe('the keys', () => {
 
 describe('the end', () => {
   it('says what was done in this sitting and lets one look back', async () => {
-    queue = supply([1])
+    room.queue = supply([1])
     const { user } = await open()
-    queue = supply([], { given: 1, left: 0 })
+    room.queue = supply([], { given: 1, left: 0 })
     await user.keyboard('a')
     expect(name()).toBe('Nothing is left for you')
     expect(screen.getByText('In this sitting you graded one candidate: 1 sure.')).toBeInTheDocument()
@@ -306,13 +189,13 @@ describe('the end', () => {
   })
 
   it('says when the last ones are with other people', async () => {
-    queue = { ...supply([], { left: 2 }) }
+    room.queue = { ...supply([], { left: 2 }) }
     await open()
     expect(name()).toBe('The last 2 are on other benches')
   })
 
   it('says when nothing is imaged yet', async () => {
-    queue = { ...supply([]), imaged: false }
+    room.queue = { ...supply([]), imaged: false }
     await open()
     expect(name()).toBe('No pictures to grade yet')
   })
@@ -320,7 +203,7 @@ describe('the end', () => {
   it('takes only cannot judge for a candidate without pictures', async () => {
     const bare = benchCandidate(1)
     bare.views = bare.views.map((view) => ({ ...view, url: null }))
-    queue = { ...supply([]), candidates: [bare], left: 1 }
+    room.queue = { ...supply([]), candidates: [bare], left: 1 }
     const { user } = await open()
     await user.keyboard('a')
     expect(name()).toBe('SWS-1')
@@ -333,7 +216,7 @@ describe('the end', () => {
     await user.keyboard('a')
     unmount()
     await waitFor(() =>
-      expect(sent.at(-1)).toMatchObject({ method: 'DELETE', url: '/api/campaigns/north/queue?candidates=2,3' }),
+      expect(room.sent.at(-1)).toMatchObject({ method: 'DELETE', url: '/api/campaigns/north/queue?candidates=2,3' }),
     )
   })
 })

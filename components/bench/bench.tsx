@@ -137,7 +137,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
               />
             ) : null}
             <div className="flex grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2">
-              <SaveLine snapshot={bench.snapshot} />
+              <SaveLine snapshot={bench.snapshot} slug={slug} />
               <button
                 type="button"
                 onClick={letGo(() => bench.setHelpOpen(true))}

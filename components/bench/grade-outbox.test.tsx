@@ -1,83 +1,84 @@
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { MemoryStore, waitingGrade as waiting } from './_memory-store'
 import type { GradeBody, SendOutcome } from './bench-api'
-import { GradeOutbox, type RefusedGrade, type WaitingGrade } from './grade-outbox'
+import { GradeOutbox, type RefusedGrade, type TabMessage, type WaitingGrade } from './grade-outbox'
 
 beforeEach(() => {
   vi.useFakeTimers()
+  localStorage.clear()
 })
 afterEach(() => vi.useRealTimers())
 
-function memoryStorage() {
-  const entries = new Map<string, string>()
-  return {
-    entries,
-    get length() {
-      return entries.size
-    },
-    key: (index: number) => [...entries.keys()][index] ?? null,
-    getItem: (key: string) => entries.get(key) ?? null,
-    setItem: (key: string, value: string) => void entries.set(key, value),
-    removeItem: (key: string) => void entries.delete(key),
+/** Tabs of one browser: one database, one turn at a time, and what one says the others hear. */
+function browser() {
+  const disk = new MemoryStore()
+  const tabs: GradeOutbox[] = []
+  let turn: Promise<void> = Promise.resolve()
+  let working = 0
+  let mostWorking = 0
+  function open(answers: SendOutcome[] = [], scope = 'north:7') {
+    const sent: string[] = []
+    const refused: RefusedGrade[] = []
+    const found: [string, number[]][] = []
+    const outbox: GradeOutbox = new GradeOutbox({
+      store: disk.store,
+      older: localStorage,
+      scope,
+      send: async (_candidate: number, body: GradeBody): Promise<SendOutcome> => {
+        mostWorking = Math.max(mostWorking, ++working)
+        sent.push(body.id)
+        await Promise.resolve()
+        working--
+        return answers.shift() ?? { outcome: 'saved' }
+      },
+      exclusively: (work) => (turn = turn.then(work)),
+      tell: (message: TabMessage) => {
+        for (const tab of tabs) if (tab !== outbox) void tab.hear(structuredClone(message))
+      },
+      onRefused: (grade) => refused.push(grade),
+      onFound: (grades: readonly WaitingGrade[], where) =>
+        found.push([where, grades.map(({ candidateId }) => candidateId)]),
+    })
+    tabs.push(outbox)
+    return { outbox, sent, refused, found, close: () => (outbox.stop(), tabs.splice(tabs.indexOf(outbox), 1)) }
   }
-}
-
-function waiting(candidateId: number, grade: GradeBody['grade'] = 'A'): WaitingGrade {
-  const body = {
-    id: `uid-${candidateId}-${grade}`,
-    grade,
-    tags: [],
-    remark: null,
-    view: null,
-    seconds: 1,
-    reason: null,
-  }
-  return { candidateId, name: `SWS-${candidateId}`, first: true, at: candidateId, body }
-}
-
-function open(answers: SendOutcome[], storage: ReturnType<typeof memoryStorage> | null = memoryStorage()) {
-  const sent: string[] = []
-  const refused: RefusedGrade[] = []
-  const send = async (_candidate: number, body: GradeBody): Promise<SendOutcome> => {
-    sent.push(body.id)
-    return answers.shift() ?? { outcome: 'saved' }
-  }
-  const outbox = new GradeOutbox({ storage, scope: 'north:7', send, onRefused: (grade) => refused.push(grade) })
-  return { outbox, sent, refused, storage }
+  return { disk, open, mostWorking: () => mostWorking }
 }
 
 const trouble: SendOutcome = { outcome: 'trouble', sentence: 'The server cannot be reached.' }
+const full: SendOutcome = { outcome: 'refused', sentence: 'It is full.' }
 const settled = () => vi.advanceTimersByTimeAsync(0)
 
 describe('the outbox', () => {
   it('sends in order, one at a time, and forgets what was acknowledged', async () => {
-    const { outbox, sent, storage } = open([])
+    const { disk, open } = browser()
+    const { outbox, sent } = open()
     outbox.add(waiting(1))
     outbox.add(waiting(2))
     expect(outbox.snapshot().waiting).toHaveLength(2)
-    expect(storage?.entries.size).toBe(2)
+    expect(disk.waiting.size).toBe(2)
     await settled()
     expect(sent).toEqual(['uid-1-A', 'uid-2-A'])
-    expect(outbox.snapshot()).toEqual({ waiting: [], refused: [], trouble: null })
-    expect(storage?.entries.size).toBe(0)
+    expect(outbox.snapshot()).toEqual({ waiting: [], refused: [], trouble: null, kept: true })
+    expect(disk.waiting.size).toBe(0)
   })
 
   it('tries again with the same id and growing pauses until it is taken, keeping the order', async () => {
-    const { outbox, sent } = open([trouble, trouble])
+    const { outbox, sent } = browser().open([trouble, trouble])
     outbox.add(waiting(1))
-    outbox.add(waiting(2))
     await settled()
-    expect(outbox.snapshot()).toMatchObject({ trouble: 'The server cannot be reached.', waiting: { length: 2 } })
+    expect(outbox.snapshot()).toMatchObject({ trouble: { sentence: 'The server cannot be reached.', signIn: false } })
     await vi.advanceTimersByTimeAsync(1000)
     expect(sent).toEqual(['uid-1-A', 'uid-1-A'])
     await vi.advanceTimersByTimeAsync(1000)
     expect(sent).toHaveLength(2)
     await vi.advanceTimersByTimeAsync(1000)
-    expect(sent).toEqual(['uid-1-A', 'uid-1-A', 'uid-1-A', 'uid-2-A'])
+    expect(sent).toHaveLength(3)
     expect(outbox.snapshot()).toMatchObject({ trouble: null, waiting: [] })
   })
 
   it('tries at once when told that the connection is back', async () => {
-    const { outbox, sent } = open([trouble])
+    const { outbox, sent } = browser().open([trouble])
     outbox.add(waiting(1))
     await settled()
     outbox.flush()
@@ -86,8 +87,17 @@ describe('the outbox', () => {
     expect(outbox.snapshot().waiting).toEqual([])
   })
 
+  it('sends a correction after what it corrects, also where the clock was set back between them', async () => {
+    const { outbox, sent } = browser().open([trouble])
+    outbox.add(waiting(1, 'A', { at: 5000 }))
+    outbox.add(waiting(1, 'B', { at: 3000, first: false }))
+    await vi.advanceTimersByTimeAsync(5000)
+    expect([...new Set(sent)]).toEqual(['uid-1-A', 'uid-1-B'])
+  })
+
   it('puts aside what the server refuses, says why, does not send it again and goes on', async () => {
-    const { outbox, sent, refused } = open([{ outcome: 'refused', sentence: 'It is full.' }])
+    const { disk, open } = browser()
+    const { outbox, sent, refused } = open([full])
     outbox.add(waiting(1))
     outbox.add(waiting(2))
     await vi.advanceTimersByTimeAsync(120_000)
@@ -95,39 +105,153 @@ describe('the outbox', () => {
     expect(refused).toMatchObject([{ candidateId: 1, sentence: 'It is full.' }])
     expect(outbox.snapshot()).toMatchObject({ waiting: [], refused: [{ sentence: 'It is full.' }] })
     outbox.dismiss('uid-1-A')
+    await settled()
     expect(outbox.snapshot().refused).toEqual([])
+    expect(disk.refused.size).toBe(0)
   })
 
   it('finds after a reload what was not acknowledged and what was refused, and sends the first in order', async () => {
-    const before = open([{ outcome: 'refused', sentence: 'It is full.' }, trouble])
-    for (const id of [1, 3, 2]) before.outbox.add(waiting(id))
+    const { open } = browser()
+    const before = open([full, trouble])
+    for (const id of [1, 3, 2]) before.outbox.add(waiting(id, 'A', { at: 10 * id }))
     await settled()
-    before.outbox.stop()
-    const after = open([], before.storage)
+    before.close()
+    const after = open()
+    await after.outbox.open()
     expect(after.outbox.snapshot().refused).toMatchObject([{ candidateId: 1 }])
-    after.outbox.flush()
+    expect(after.found).toEqual([['earlier', [3, 2]]])
+    expect(after.refused, 'it was refused before').toEqual([])
     await settled()
-    expect(after.sent).toEqual(['uid-2-A', 'uid-3-A'])
+    expect(after.sent).toEqual(['uid-3-A', 'uid-2-A'])
   })
 
-  it('leaves alone what another person or campaign has waiting in the same browser', async () => {
-    const storage = memoryStorage()
-    storage.setItem('ringside:waiting:south:7:uid-9-A', JSON.stringify(waiting(9)))
-    const { outbox, sent } = open([], storage)
-    outbox.flush()
+  it('says when a first grade replaced one that had been given elsewhere, and says nothing of a correction', async () => {
+    const { outbox, refused } = browser().open([
+      { outcome: 'saved', replaced: true },
+      { outcome: 'saved', replaced: true },
+    ])
+    outbox.add(waiting(1))
+    outbox.add(waiting(2, 'B', { first: false }))
+    await settled()
+    expect(outbox.snapshot().refused).toMatchObject([{ candidateId: 1, taken: true }])
+    expect(outbox.snapshot().refused[0].sentence).toMatch(/^It replaced the grade/)
+    expect(refused).toEqual([])
+  })
+})
+
+describe('two tabs of one person', () => {
+  it('send one at a time, each grade once, and both show how many wait', async () => {
+    const { open, mostWorking } = browser()
+    const first = open([trouble])
+    const second = open()
+    first.outbox.add(waiting(1))
+    second.outbox.add(waiting(2))
+    await settled()
+    expect(mostWorking()).toBe(1)
+    await vi.advanceTimersByTimeAsync(60_000)
+    expect([...first.sent, ...second.sent].filter((id) => id === 'uid-2-A')).toHaveLength(1)
+    expect(first.outbox.snapshot().waiting).toEqual([])
+    expect(second.outbox.snapshot().waiting).toEqual([])
+  })
+
+  it('see what waits in the other', async () => {
+    const { open } = browser()
+    const troubles = Array.from({ length: 9 }, () => trouble)
+    const first = open([...troubles])
+    const second = open([...troubles])
+    first.outbox.add(waiting(1))
+    second.outbox.add(waiting(2))
+    await settled()
+    for (const { outbox } of [first, second]) expect(outbox.snapshot().waiting).toHaveLength(2)
+  })
+
+  it('tell each other what they graded, so that neither grades it again unawares', async () => {
+    const { open } = browser()
+    const first = open()
+    const second = open()
+    first.outbox.add(waiting(1))
+    await settled()
+    expect(second.found).toEqual([['other tab', [1]]])
+    expect(first.found).toEqual([])
+  })
+
+  it('both hear of a refusal, whichever of them sent, and both forget it when one has read it', async () => {
+    const { open } = browser()
+    const first = open([trouble])
+    const second = open([full])
+    first.outbox.add(waiting(1))
+    await settled()
+    second.outbox.flush()
+    await settled()
+    expect(first.refused).toMatchObject([{ candidateId: 1 }])
+    expect(first.outbox.snapshot()).toMatchObject({ waiting: [], refused: [{ candidateId: 1 }] })
+    first.outbox.dismiss('uid-1-A')
+    expect(second.outbox.snapshot().refused).toEqual([])
+  })
+})
+
+describe('what another person has waiting', () => {
+  it('is left alone, in the older storage too', async () => {
+    localStorage.setItem('ringside:waiting:south:7:uid-9-A', JSON.stringify(waiting(9)))
+    localStorage.setItem('ringside:waiting:north:70:uid-8-A', JSON.stringify(waiting(8)))
+    const { outbox, sent } = browser().open()
+    await outbox.open()
     await settled()
     expect(sent).toEqual([])
-    expect(storage.entries.size).toBe(1)
+    expect(localStorage).toHaveLength(2)
+  })
+})
+
+describe('the older storage', () => {
+  it('is emptied into the database, and what waited there is sent', async () => {
+    localStorage.setItem('ringside:waiting:north:7:uid-9-A', JSON.stringify(waiting(9)))
+    localStorage.setItem('ringside:refused:north:7:uid-8-A', JSON.stringify({ ...waiting(8), sentence: 'It is full.' }))
+    const { open } = browser()
+    const { outbox, sent, found } = open([trouble])
+    await outbox.open()
+    expect(localStorage).toHaveLength(0)
+    expect(found).toEqual([['earlier', [9]]])
+    expect(outbox.snapshot()).toMatchObject({ refused: [{ candidateId: 8, sentence: 'It is full.' }] })
+    await vi.advanceTimersByTimeAsync(2000)
+    expect(sent).toEqual(['uid-9-A', 'uid-9-A'])
   })
 
-  it('still sends when the storage is full or forbidden', async () => {
-    const storage = memoryStorage()
-    storage.setItem = () => {
-      throw new DOMException('full', 'QuotaExceededError')
-    }
-    const { outbox, sent } = open([], storage)
+  it('keeps what the database does not take', async () => {
+    localStorage.setItem('ringside:waiting:north:7:uid-9-A', JSON.stringify(waiting(9)))
+    const { disk, open } = browser()
+    disk.broken = true
+    const { outbox, sent } = open([trouble])
+    await outbox.open()
+    await settled()
+    expect(localStorage).toHaveLength(1)
+    expect(outbox.snapshot()).toMatchObject({ kept: false, waiting: [{ candidateId: 9 }] })
+    expect(sent).toEqual(['uid-9-A'])
+  })
+})
+
+describe('a browser that keeps nothing', () => {
+  it('still sends, and says that what waits is in this tab only', async () => {
+    const { disk, open } = browser()
+    disk.broken = true
+    const { outbox, sent } = open([trouble, full])
+    outbox.add(waiting(1))
+    outbox.add(waiting(2))
+    await settled()
+    expect(outbox.snapshot()).toMatchObject({ kept: false, waiting: { length: 2 } })
+    await vi.advanceTimersByTimeAsync(60_000)
+    expect(sent).toEqual(['uid-1-A', 'uid-1-A', 'uid-2-A'])
+    expect(outbox.snapshot()).toMatchObject({ waiting: [], refused: [{ candidateId: 1 }] })
+  })
+
+  it('keeps what waits as soon as there is room again', async () => {
+    const { disk, open } = browser()
+    disk.broken = true
+    const { outbox } = open([trouble, trouble, trouble])
     outbox.add(waiting(1))
     await settled()
-    expect(sent).toEqual(['uid-1-A'])
+    disk.broken = false
+    await vi.advanceTimersByTimeAsync(1000)
+    expect(outbox.snapshot().kept).toBe(true)
+    expect([...disk.waiting.keys()]).toEqual(['uid-1-A'])
   })
 })

@@ -1,10 +1,13 @@
 /**
- * Grades on their way to the server, in order, one at a time. Each is kept in the browser's storage until the server has
- * acknowledged it, so that neither a failed request nor a reload loses it; its id makes a repeated delivery harmless. What the
- * server refuses is put aside with its sentence and never sent again.
+ * Grades on their way to the server, in order, one at a time. Each is kept in the browser's database until the server has
+ * acknowledged it, so that neither a failed request nor a reload loses it; its id makes a repeated delivery harmless. Tabs of one
+ * person share what waits, and one of them sends at a time. What the server refuses is put aside with its sentence and never
+ * sent again.
  */
 import type { GradeBody, SendOutcome } from './bench-api'
 import type { Answer } from './bench-session'
+import type { BenchStore } from './bench-store'
+import { dropOlder, olderGrades, type OlderStorage } from './older-outbox'
 
 export interface WaitingGrade {
   candidateId: number
@@ -20,13 +23,23 @@ export interface WaitingGrade {
 
 export interface RefusedGrade extends WaitingGrade {
   sentence: string
+  /** The server took it after all, and there is something to know of it. */
+  taken?: true
+}
+
+export interface Trouble {
+  sentence: string
+  /** Signing in mends it. */
+  signIn: boolean
 }
 
 export interface OutboxSnapshot {
   waiting: readonly WaitingGrade[]
   refused: readonly RefusedGrade[]
   /** Why the first in line has not been taken yet; null while all goes well. */
-  trouble: string | null
+  trouble: Trouble | null
+  /** Whether the browser keeps what waits; else it is in the memory of this tab alone. */
+  kept: boolean
 }
 
 /** How many of them are first grades, which the server will count when they arrive. */
@@ -34,34 +47,48 @@ export function firstsIn(waiting: readonly WaitingGrade[]): number {
   return waiting.filter(({ first }) => first).length
 }
 
-interface Surroundings {
-  /** One entry a grade, so that two tabs do not overwrite each other. null: memory only. */
-  storage: Pick<Storage, 'getItem' | 'setItem' | 'removeItem' | 'key' | 'length'> | null
-  /** Tells campaign and person apart in the storage. */
+/** What tabs tell each other. */
+export type TabMessage =
+  { tell: 'gave'; grade: WaitingGrade } | { tell: 'settled'; id: string } | { tell: 'dismissed'; id: string }
+
+export interface Surroundings {
+  store: Pick<BenchStore, 'grades' | 'keepWaiting' | 'keepRefused' | 'forget'>
+  /** Where grades were kept before there was a database. */
+  older: OlderStorage | null
+  /** Tells campaign and person apart. */
   scope: string
   send: (candidateId: number, body: GradeBody) => Promise<SendOutcome>
+  /** Runs one piece of work at a time among all tabs of this scope. */
+  exclusively: (work: () => Promise<void>) => Promise<void>
+  tell: (message: TabMessage) => void
   onRefused: (grade: RefusedGrade) => void
+  /** Grades that this tab has not given: of an earlier visit, or of another tab. */
+  onFound: (grades: readonly WaitingGrade[], where: 'earlier' | 'other tab') => void
 }
 
 const FIRST_RETRY_MS = 1000
 const LAST_RETRY_MS = 30_000
-export const EMPTY_OUTBOX: OutboxSnapshot = { waiting: [], refused: [], trouble: null }
+export const EMPTY_OUTBOX: OutboxSnapshot = { waiting: [], refused: [], trouble: null, kept: true }
+const REPLACED = 'It replaced the grade that you had given this candidate in another window or on another device.'
 
 export class GradeOutbox {
   readonly #around: Surroundings
   readonly #listeners = new Set<() => void>()
+  /** Given in this tab and not settled: whatever becomes of the database, they are sent from here. */
+  readonly #mine = new Map<string, WaitingGrade>()
+  /** Settled here or in another tab: a reading that began before does not bring them back. */
+  readonly #settled = new Set<string>()
+  readonly #dismissed = new Set<string>()
+  readonly #known = new Set<string>()
   #snapshot: OutboxSnapshot = EMPTY_OUTBOX
-  #sending = false
+  #queued = false
+  #stopped = false
   #failures = 0
+  #newest = 0
   #timer: ReturnType<typeof setTimeout> | undefined
 
   constructor(around: Surroundings) {
     this.#around = around
-    this.#snapshot = {
-      waiting: this.#stored<WaitingGrade>('waiting'),
-      refused: this.#stored<RefusedGrade>('refused'),
-      trouble: null,
-    }
   }
 
   subscribe = (listener: () => void): (() => void) => {
@@ -71,60 +98,136 @@ export class GradeOutbox {
 
   snapshot = (): OutboxSnapshot => this.#snapshot
 
-  add(grade: WaitingGrade): void {
-    this.#keep('waiting', grade.body.id, grade)
-    this.#change({ waiting: [...this.#snapshot.waiting, grade] })
+  /** Reads what an earlier visit or another tab left, also from where grades were kept before, and sends it. */
+  async open(): Promise<void> {
+    await this.#moveOlder()
+    await this.#read('earlier')
+    this.flush()
+  }
+
+  add(given: WaitingGrade): void {
+    // A clock that was set back must not send a correction before what it corrects.
+    const grade = { ...given, at: Math.max(given.at, this.#newest + 1) }
+    this.#newest = grade.at
+    this.#known.add(grade.body.id)
+    this.#mine.set(grade.body.id, grade)
+    this.#change({ waiting: this.#inOrder(this.#snapshot.waiting) })
+    void this.#keep([grade])
+    this.#around.tell({ tell: 'gave', grade })
     this.flush()
   }
 
   /** Tries at once, whatever the pause was: on coming back online, on returning to the tab. */
   flush = (): void => {
     clearTimeout(this.#timer)
-    void this.#sendAll()
+    if (this.#queued) return
+    this.#queued = true
+    void this.#around.exclusively(() => {
+      this.#queued = false
+      return this.#sendAll()
+    })
+  }
+
+  /** What another tab says. */
+  async hear(message: TabMessage): Promise<void> {
+    if (message.tell === 'settled') {
+      this.#settled.add(message.id)
+      this.#mine.delete(message.id)
+    }
+    if (message.tell === 'dismissed') this.#dismiss(message.id)
+    if (message.tell === 'gave') this.#meet([message.grade], 'other tab')
+    await this.#read('other tab')
   }
 
   dismiss(id: string): void {
-    this.#drop('refused', id)
-    this.#change({ refused: this.#snapshot.refused.filter(({ body }) => body.id !== id) })
+    this.#dismiss(id)
+    void this.#drop('refused', id)
+    this.#around.tell({ tell: 'dismissed', id })
   }
 
+  /** No more tries after the one that is under way. */
   stop(): void {
+    this.#stopped = true
     clearTimeout(this.#timer)
   }
 
+  #dismiss(id: string): void {
+    this.#dismissed.add(id)
+    this.#change({ refused: this.#snapshot.refused.filter(({ body }) => body.id !== id) })
+  }
+
   async #sendAll(): Promise<void> {
-    if (this.#sending) return
-    this.#sending = true
-    try {
-      for (let first = this.#snapshot.waiting[0]; first; first = this.#snapshot.waiting[0]) {
-        const answer = await this.#around.send(first.candidateId, first.body)
-        if (answer.outcome === 'trouble') {
-          this.#failures++
-          this.#change({ trouble: answer.sentence })
-          this.#timer = setTimeout(this.flush, Math.min(LAST_RETRY_MS, FIRST_RETRY_MS * 2 ** (this.#failures - 1)))
-          return
-        }
-        this.#failures = 0
-        this.#settle(first, answer)
+    if (!this.#snapshot.kept && this.#mine.size > 0) await this.#keep([...this.#mine.values()])
+    for (;;) {
+      await this.#read('other tab')
+      const first = this.#snapshot.waiting[0]
+      if (!first) return this.#change({ trouble: null })
+      const answer = await this.#around.send(first.candidateId, first.body)
+      if (answer.outcome === 'trouble') {
+        this.#failures++
+        this.#change({ trouble: { sentence: answer.sentence, signIn: answer.signIn ?? false } })
+        const pause = Math.min(LAST_RETRY_MS, FIRST_RETRY_MS * 2 ** (this.#failures - 1))
+        if (!this.#stopped) this.#timer = setTimeout(this.flush, pause)
+        return
       }
-    } finally {
-      this.#sending = false
+      this.#failures = 0
+      await this.#settle(first, answer)
     }
   }
 
-  #settle(grade: WaitingGrade, answer: SendOutcome & { outcome: 'saved' | 'refused' }): void {
+  async #settle(grade: WaitingGrade, answer: SendOutcome & { outcome: 'saved' | 'refused' }): Promise<void> {
     const { id } = grade.body
-    const waiting = this.#snapshot.waiting.filter(({ body }) => body.id !== id)
-    if (answer.outcome === 'refused') {
-      const refused = { ...grade, sentence: answer.sentence }
-      this.#keep('refused', id, refused)
-      this.#drop('waiting', id)
-      this.#change({ waiting, trouble: null, refused: [...this.#snapshot.refused, refused] })
-      this.#around.onRefused(refused)
-    } else {
-      this.#drop('waiting', id)
-      this.#change({ waiting, trouble: null })
+    this.#settled.add(id)
+    this.#mine.delete(id)
+    const told: RefusedGrade | null =
+      answer.outcome === 'refused'
+        ? { ...grade, sentence: answer.sentence }
+        : answer.replaced && grade.first
+          ? { ...grade, sentence: REPLACED, taken: true }
+          : null
+    if (told) this.#known.add(id)
+    this.#change({
+      waiting: this.#inOrder(this.#snapshot.waiting),
+      refused: told ? [...this.#snapshot.refused, told] : this.#snapshot.refused,
+      trouble: null,
+    })
+    if (told && !told.taken) this.#around.onRefused(told)
+    if (told) await this.#around.store.keepRefused([told]).catch(() => this.#change({ kept: false }))
+    else await this.#drop('waiting', id)
+    this.#around.tell({ tell: 'settled', id })
+  }
+
+  /** What the database holds, with what this tab holds beside it. */
+  async #read(where: 'earlier' | 'other tab'): Promise<void> {
+    let stored: Awaited<ReturnType<BenchStore['grades']>>
+    try {
+      stored = await this.#around.store.grades()
+    } catch {
+      return this.#change({ kept: false })
     }
+    const shown = new Set(this.#snapshot.refused.map(({ body }) => body.id))
+    const refused = stored.refused.filter(({ body: { id } }) => !shown.has(id) && !this.#dismissed.has(id))
+    const waiting = this.#inOrder(stored.waiting)
+    if (refused.length > 0 || !same(waiting, this.#snapshot)) {
+      this.#change({ waiting, refused: [...this.#snapshot.refused, ...refused].sort(byTime) })
+    }
+    this.#meet(waiting, where)
+    if (where === 'other tab') for (const grade of refused) if (!grade.taken) this.#around.onRefused(grade)
+  }
+
+  #meet(grades: readonly WaitingGrade[], where: 'earlier' | 'other tab'): void {
+    const strange = grades.filter(({ body }) => !this.#known.has(body.id))
+    for (const { body, at } of strange) {
+      this.#known.add(body.id)
+      this.#newest = Math.max(this.#newest, at)
+    }
+    if (strange.length > 0) this.#around.onFound(strange, where)
+  }
+
+  #inOrder(stored: readonly WaitingGrade[]): WaitingGrade[] {
+    const all = new Map(stored.map((grade) => [grade.body.id, grade]))
+    for (const [id, grade] of this.#mine) all.set(id, grade)
+    return [...all.values()].filter(({ body }) => !this.#settled.has(body.id)).sort(byTime)
   }
 
   #change(part: Partial<OutboxSnapshot>): void {
@@ -132,39 +235,39 @@ export class GradeOutbox {
     for (const listener of this.#listeners) listener()
   }
 
-  #key(kind: string, id: string): string {
-    return `ringside:${kind}:${this.#around.scope}:${id}`
-  }
-
-  // A full or forbidden storage must not stop the grading: the grade is still sent from memory.
-  #keep(kind: string, id: string, grade: WaitingGrade): void {
+  // A full or forbidden database must not stop the grading: the grade is still sent from memory.
+  async #keep(grades: readonly WaitingGrade[]): Promise<void> {
     try {
-      this.#around.storage?.setItem(this.#key(kind, id), JSON.stringify(grade))
+      await this.#around.store.keepWaiting(grades)
+      if (!this.#snapshot.kept) this.#change({ kept: true })
     } catch {
-      return
+      this.#change({ kept: false })
     }
   }
 
-  #drop(kind: string, id: string): void {
-    try {
-      this.#around.storage?.removeItem(this.#key(kind, id))
-    } catch {
-      return
-    }
+  /** What cannot be dropped is sent once more on the next visit, which its id makes harmless. */
+  async #drop(kind: 'waiting' | 'refused', id: string): Promise<void> {
+    await this.#around.store.forget(kind, id).catch(() => this.#change({ kept: false }))
   }
 
-  #stored<T extends WaitingGrade>(kind: string): T[] {
-    const grades: T[] = []
+  async #moveOlder(): Promise<void> {
+    const { older, scope, store } = this.#around
+    const found = olderGrades(older, scope)
+    if (found.waiting.length + found.refused.length === 0) return
     try {
-      const { storage } = this.#around
-      for (let index = 0; index < (storage?.length ?? 0); index++) {
-        const key = storage?.key(index)
-        const text = key?.startsWith(this.#key(kind, '')) ? storage?.getItem(key) : null
-        if (text) grades.push(JSON.parse(text) as T)
-      }
+      await store.keepWaiting(found.waiting)
+      await store.keepRefused(found.refused)
+      dropOlder(older, scope)
     } catch {
-      return grades
+      for (const grade of found.waiting) this.#mine.set(grade.body.id, grade)
+      this.#change({ kept: false, waiting: this.#inOrder([]), refused: found.refused })
+      this.#meet(found.waiting, 'earlier')
     }
-    return grades.sort((a, b) => a.at - b.at)
   }
 }
+
+const byTime = (a: WaitingGrade, b: WaitingGrade): number =>
+  a.at - b.at || (a.body.id < b.body.id ? -1 : a.body.id > b.body.id ? 1 : 0)
+
+const same = (waiting: readonly WaitingGrade[], now: OutboxSnapshot): boolean =>
+  waiting.length === now.waiting.length && waiting.every(({ body }, index) => body.id === now.waiting[index].body.id)

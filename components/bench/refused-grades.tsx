@@ -2,7 +2,7 @@ import { Notice } from '@/components/ui/notice'
 import type { RefusedGrade } from './grade-outbox'
 import { letGo } from './let-go'
 
-/** What the server did not take, in words, until the person has read it. */
+/** What the server did not take, or took in another way than meant, in words, until the person has read it. */
 export function RefusedGrades({
   refused,
   onDismiss,
@@ -10,12 +10,12 @@ export function RefusedGrades({
   refused: readonly RefusedGrade[]
   onDismiss: (id: string) => void
 }) {
-  return refused.map(({ body, name, sentence }) => (
-    <Notice key={body.id} tone="alarm">
+  return refused.map(({ body, name, sentence, taken }) => (
+    <Notice key={body.id} tone={taken ? 'note' : 'alarm'}>
       <p>
         <b className="figures">{name}</b>, your {body.grade}: {sentence}
       </p>
-      {body.remark ? <p className="mt-1 text-mute">Your remark: {body.remark}</p> : null}
+      {body.remark && !taken ? <p className="mt-1 text-mute">Your remark: {body.remark}</p> : null}
       <button
         type="button"
         onClick={letGo(() => onDismiss(body.id))}

@@ -6,26 +6,47 @@ import type { OutboxSnapshot } from './grade-outbox'
 /** A sentence is read out only when it has held for so long: each grade waits for a moment, and that is no news. */
 const SETTLED_MS = 1500
 
-export function saveSentence({ waiting, trouble }: OutboxSnapshot): string {
-  if (waiting.length === 0) return 'All grades saved'
-  return trouble ? `${waiting.length} waiting. ${trouble} Trying again.` : `${waiting.length} waiting`
+const NOT_KEPT =
+  'This browser keeps nothing for this site, so what waits is in this tab only: leave it open until all is saved.'
+
+export function saveSentence({ waiting, trouble, kept }: OutboxSnapshot): string {
+  const parts = [
+    waiting.length === 0 ? 'All grades saved' : `${waiting.length} waiting`,
+    ...(waiting.length > 0 && trouble ? [trouble.sentence, ...(trouble.signIn ? [] : ['Trying again.'])] : []),
+    ...(waiting.length > 0 && !kept ? [NOT_KEPT] : []),
+  ]
+  if (parts.length === 1) return parts[0]
+  return `${parts[0]}. ${parts.slice(1).join(' ')}`
 }
 
-export function SaveLine({ snapshot }: { snapshot: OutboxSnapshot }) {
+export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: string }) {
   const sentence = saveSentence(snapshot)
+  const trouble = snapshot.waiting.length > 0 ? snapshot.trouble : null
   const [spoken, setSpoken] = useState('')
   useEffect(() => {
-    const timer = setTimeout(() => setSpoken((before) => (before || snapshot.trouble ? sentence : '')), SETTLED_MS)
+    const timer = setTimeout(() => setSpoken((before) => (before || trouble ? sentence : '')), SETTLED_MS)
     return () => clearTimeout(timer)
-  }, [sentence, snapshot.trouble])
+  }, [sentence, trouble])
   return (
-    <>
-      <p data-save-line className={`text-note ${snapshot.trouble ? 'text-alarm' : 'text-mute'}`}>
+    <div className="text-note">
+      <p
+        data-save-line
+        className={trouble || (snapshot.waiting.length > 0 && !snapshot.kept) ? 'text-alarm' : 'text-mute'}
+      >
         {sentence}
       </p>
+      {trouble?.signIn ? (
+        // The whole page goes to sign in and comes back to the bench.
+        <a
+          href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/bench`)}`}
+          className="inline-flex min-h-11 items-center underline underline-offset-4 md:min-h-7"
+        >
+          Sign in and come back here
+        </a>
+      ) : null}
       <p aria-live="polite" className="sr-only">
         {spoken}
       </p>
-    </>
+    </div>
   )
 }

@@ -20,6 +20,7 @@ import { REMARK_ID } from './remark-box'
 import { firstsIn } from './grade-outbox'
 import { useOutbox } from './use-outbox'
 import { usePreloaded } from './use-preloaded'
+import { useSitting } from './use-sitting'
 import { useSupply } from './use-supply'
 import { useVisibleSeconds } from './use-visible-seconds'
 
@@ -43,19 +44,33 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   const look = currentLook(session)
   const candidateId = look?.candidate.id ?? null
+  const recall = useRef<() => Promise<void>>(null)
   const { outbox, snapshot, latest } = useOutbox(slug, personId, {
     refused: ({ first: wasFirst, before, candidateId: id }) => {
       if (wasFirst) dispatch({ type: 'refused', candidateId: id })
       else if (before) dispatch({ type: 'correction refused', candidateId: id, before })
     },
-    found: (waiting) =>
+    found: (grades, where) => {
+      const candidateIds = grades.map((grade) => grade.candidateId)
+      if (where === 'earlier') return dispatch({ type: 'found waiting', candidateIds, firsts: firstsIn(grades) })
+      const shown = grades.find((grade) => grade.candidateId === candidateId)
+      if (shown) setHint(`You gave ${shown.name} its ${shown.body.grade} in another tab.`)
       dispatch({
-        type: 'found waiting',
-        candidateIds: waiting.map((grade) => grade.candidateId),
-        firsts: firstsIn(waiting),
-      }),
+        type: 'given elsewhere',
+        grades: grades.map(({ candidateId: id, first: isFirst, body: { grade: letter, tags, remark, reason } }) => ({
+          candidateId: id,
+          first: isFirst,
+          answer: { grade: letter, tags, remark: remark ?? '', reason } as Answer,
+        })),
+      })
+    },
+    opened: () => void recall.current?.(),
   })
   useSupply({ slug, personId, session, dispatch, outbox: latest })
+  const recallSitting = useSitting({ slug, personId, session, dispatch, outbox: latest, onHint: setHint })
+  useEffect(() => {
+    recall.current = recallSitting
+  }, [recallSitting])
   usePreloaded(session.upcoming)
   const seconds = useVisibleSeconds(candidateId)
 

@@ -76,7 +76,10 @@ export function useSupply({ slug, personId, session, dispatch, outbox }: Around)
     return () => clearInterval(timer)
   }, [supply, empty])
 
-  const heldIds = useEffectEvent(() => upcoming.map(({ id }) => id))
+  // One that words were written about stays lent, so that it comes back after a reload with its words.
+  const heldIds = useEffectEvent(() =>
+    upcoming.map(({ id }) => id).filter((id) => !session.drafts[id]?.remark.trim() && !session.drafts[id]?.tags.length),
+  )
   const unmounting = useRef<ReturnType<typeof setTimeout>>(undefined)
 
   useEffect(() => {

@@ -1,0 +1,230 @@
+import { screen, waitFor, within } from '@testing-library/react'
+import { beforeEach, describe, expect, it, vi } from 'vitest'
+import { freshRoom, grades, look, name, open, pause, room, saved } from './_bench-room'
+import { supply } from './_candidates'
+import { waitingGrade } from './_memory-store'
+
+freshRoom()
+
+function warnsOnLeaving(): boolean {
+  const leaving = new Event('beforeunload', { cancelable: true })
+  window.dispatchEvent(leaving)
+  return leaving.defaultPrevented
+}
+
+describe('a grade on its way', () => {
+  it('tries again after a failure and never loses the grade', async () => {
+    let failures = 1
+    room.answerGrade = () => (failures-- > 0 ? new Response(null, { status: 503 }) : Response.json({}))
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. The server has trouble/))
+    expect(warnsOnLeaving(), 'the browser keeps it').toBe(false)
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
+    expect(grades()[0].body?.id).toBe(grades()[1].body?.id)
+  })
+
+  it('says where the browser keeps nothing, and then warns on leaving while something waits', async () => {
+    vi.stubGlobal('indexedDB', undefined)
+    room.answerGrade = () => new Response(null, { status: 503 })
+    const { user } = await open()
+    expect(warnsOnLeaving()).toBe(false)
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting.*keeps nothing for this site/))
+    expect(warnsOnLeaving()).toBe(true)
+    room.answerGrade = () => Response.json({})
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
+    expect(warnsOnLeaving()).toBe(false)
+  })
+
+  it('waits with a way to sign in and come back when the session has run out', async () => {
+    room.answerGrade = () => Response.json({ detail: '' }, { status: 401 })
+    const { user } = await open()
+    await user.keyboard('a')
+    const link = await screen.findByRole('link', { name: /Sign in/ })
+    expect(link).toHaveAttribute('href', '/signin?next=%2Fcampaigns%2Fnorth%2Fbench')
+    expect(saved()).toMatch(/^1 waiting\. You are signed out/)
+    room.answerGrade = () => Response.json({})
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
+    expect(screen.queryByRole('link', { name: /Sign in/ })).not.toBeInTheDocument()
+  })
+
+  it('says that a first grade replaced one given on another device', async () => {
+    room.answerGrade = () => Response.json({ replaced: 'other-id' })
+    const { user } = await open()
+    await user.keyboard('a')
+    expect(await screen.findByText(/SWS-1/, { selector: 'p b' })).toBeInTheDocument()
+    expect(screen.getByText(/It replaced the grade that you had given/)).toBeInTheDocument()
+    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+  })
+
+  it('after a reload sends what was left and does not show its candidate again, whatever the server lends', async () => {
+    room.answerGrade = () => new Response(null, { status: 503 })
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
+    unmount()
+    let release = () => {}
+    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    await open()
+    expect(name()).toBe('SWS-2')
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuetext', '1 of 3')
+    await waitFor(() => expect(grades()).not.toHaveLength(0))
+    release()
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    expect(new Set(grades().map(({ body }) => body?.id)).size).toBe(1)
+  })
+
+  it('shows in words what the server refused, and does not count it', async () => {
+    const detail = 'Others have filled this candidate.'
+    room.answerGrade = () => Response.json({ detail }, { status: 409 })
+    const { user } = await open()
+    await user.keyboard('a')
+    const alert = await screen.findByRole('alert')
+    expect(alert).toHaveTextContent(`SWS-1, your A: ${detail}`)
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '0')
+    await user.click(within(alert).getByRole('button', { name: 'I have read this' }))
+    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    expect(grades()).toHaveLength(1)
+  })
+
+  it('shows in words why a correction was refused, goes on, and looks back at what stands', async () => {
+    const detail = "You have seen the others' grades of this candidate since, so yours stands as you gave it."
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    await look()
+    room.answerGrade = () => Response.json({ type: 'urn:ringside:problem:judgement-seen', detail }, { status: 409 })
+    await user.keyboard('z')
+    await look()
+    await user.keyboard('n')
+    expect(await screen.findByRole('alert')).toHaveTextContent(`SWS-1, your N: ${detail}`)
+    expect(name()).toBe('SWS-2')
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '1')
+    await user.keyboard('z')
+    expect(screen.getByRole('button', { name: /^A: Sure/ })).toHaveAttribute('aria-pressed', 'true')
+  })
+
+  it('says whose it is with everything it sends', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    unmount()
+    await waitFor(() => expect(room.sent.at(-1)?.method).toBe('DELETE'))
+    expect(new Set(room.sent.map(({ method }) => method))).toEqual(new Set(['GET', 'PUT', 'DELETE']))
+    expect(new Set(room.sent.map(({ person }) => person))).toEqual(new Set(['7']))
+  })
+
+  it('keeps a grade, with a sentence, while somebody else is signed in, and sends it when the person is back', async () => {
+    room.answerGrade = () => Response.json({ type: 'urn:ringside:problem:other-person', detail: '' }, { status: 409 })
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting\. Somebody else has signed in in this browser/))
+    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    room.answerGrade = () => Response.json({})
+    await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
+  })
+})
+
+describe('a second tab', () => {
+  const tell = (grade: unknown) => {
+    const tab = new BroadcastChannel('ringside-outbox:north:7')
+    tab.postMessage({ tell: 'gave', grade })
+    setTimeout(() => tab.close(), 50)
+  }
+
+  it('that grades what is on the stage here takes it away, and this one says so', async () => {
+    await open()
+    tell(waitingGrade(1, 'C'))
+    await waitFor(() => expect(name()).toBe('SWS-2'))
+    expect(screen.getByText('You gave SWS-1 its C in another tab.')).toBeInTheDocument()
+    expect(grades()).toHaveLength(0)
+  })
+
+  it('that corrects what was graded here shows its answer when one looks back', async () => {
+    const { user } = await open()
+    await user.keyboard('a')
+    tell(waitingGrade(1, 'N', { first: false, at: Date.now() + 1000 }))
+    await look()
+    await user.keyboard('z')
+    await waitFor(() => expect(screen.getByRole('button', { name: /^N: / })).toHaveAttribute('aria-pressed', 'true'))
+  })
+})
+
+describe('after a reload', () => {
+  beforeEach(() => {
+    room.standing = { answer: { id: 'x', grade: 'A', tags: [], reason: null, remark: null }, open: true }
+  })
+
+  async function gradeTwoAndReload() {
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await look()
+    await user.keyboard('b')
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    unmount()
+    room.queue = supply([3], { given: 2, left: 1 })
+    const again = await open()
+    await pause(60)
+    return again
+  }
+
+  it('undo goes on to where the sitting began, and a correction is sent', async () => {
+    const { user } = await gradeTwoAndReload()
+    expect(name()).toBe('SWS-3')
+    await user.keyboard('z')
+    expect(name()).toBe('SWS-2')
+    await user.keyboard('z')
+    await look()
+    expect(name()).toBe('SWS-1')
+    expect(screen.getByRole('button', { name: /^A: / })).toHaveAttribute('aria-pressed', 'true')
+    await user.keyboard('n')
+    await waitFor(() => expect(grades().at(-1)).toMatchObject({ body: { grade: 'N' } }))
+    expect(grades().at(-1)?.url).toBe('/api/campaigns/north/candidates/1/grade')
+    expect(name()).toBe('SWS-3')
+  })
+
+  it('shows what stands at the server where that was changed elsewhere', async () => {
+    room.standing = { answer: { id: 'y', grade: 'C', tags: [], reason: null, remark: 'seen again' }, open: true }
+    const { user } = await gradeTwoAndReload()
+    await user.keyboard('z')
+    await waitFor(() => expect(screen.getByRole('button', { name: /^C: / })).toHaveAttribute('aria-pressed', 'true'))
+    expect(screen.getByText(/changed this grade elsewhere/)).toBeInTheDocument()
+  })
+
+  it('says that a grade stands where the others’ have been seen since', async () => {
+    room.standing = { answer: { id: 'x', grade: 'B', tags: [], reason: null, remark: null }, open: false }
+    const { user } = await gradeTwoAndReload()
+    await user.keyboard('z')
+    expect(await screen.findByText(/so yours stands as it is/)).toBeInTheDocument()
+  })
+
+  it('words and tags that were not sent are there again, and their candidate is not given back', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('mthin arc{Enter}')
+    await user.keyboard('t1t')
+    unmount()
+    await waitFor(() =>
+      expect(room.sent.at(-1)).toMatchObject({ method: 'DELETE', url: expect.stringMatching(/=2,3$/) }),
+    )
+    const again = await open()
+    await screen.findByRole('button', { name: /thin arc$/ })
+    await again.user.keyboard('a')
+    await waitFor(() => expect(grades()[0]?.body).toMatchObject({ remark: 'thin arc', tags: ['arc'] }))
+    again.unmount()
+    expect(Object.keys(localStorage).filter((key) => key.includes('draft'))).toEqual([])
+  })
+
+  it('begins a new sitting after some hours', async () => {
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    unmount()
+    const now = Date.now()
+    vi.spyOn(Date, 'now').mockReturnValue(now + 5 * 3_600_000)
+    room.queue = supply([2, 3], { given: 1 })
+    const again = await open()
+    await again.user.keyboard('z')
+    vi.mocked(Date.now).mockRestore()
+    expect(name()).toBe('SWS-2')
+  })
+})

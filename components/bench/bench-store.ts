@@ -1,0 +1,133 @@
+/** The database of this browser in which the bench keeps what must survive a reload, told apart by campaign and person. */
+import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
+import type { Look } from './bench-session'
+import type { RefusedGrade, WaitingGrade } from './grade-outbox'
+
+/** One look of a sitting, for undo. */
+export interface KeptLook {
+  look: Look
+  /** Milliseconds since 1970, when it was first given: the order of undo. */
+  at: number
+}
+
+interface Shape extends DBSchema {
+  waiting: { key: [string, string]; value: Scoped<WaitingGrade> }
+  refused: { key: [string, string]; value: Scoped<RefusedGrade> }
+  looks: { key: [string, number]; value: KeptLook & { scope: string; candidateId: number } }
+}
+
+type Scoped<T> = T & { scope: string; id: string }
+
+const NAME = 'ringside-bench'
+
+/** Everything of one scope: its keys begin with it, and an array sorts after any number or string. */
+const allOf = (scope: string) => IDBKeyRange.bound([scope], [scope, []])
+
+/**
+ * Every method rejects where the browser keeps nothing: in a private window of some browsers, with a full disk, or where the person
+ * has forbidden it. A database that was closed under our feet is opened again by the next call.
+ */
+export class BenchStore {
+  readonly #scope: string
+  #opening: Promise<IDBPDatabase<Shape>> | null = null
+
+  constructor(scope: string) {
+    this.#scope = scope
+  }
+
+  async grades(): Promise<{ waiting: WaitingGrade[]; refused: RefusedGrade[] }> {
+    const db = await this.#open()
+    const transaction = db.transaction(['waiting', 'refused'])
+    const [waiting, refused] = await Promise.all([
+      transaction.objectStore('waiting').getAll(allOf(this.#scope)),
+      transaction.objectStore('refused').getAll(allOf(this.#scope)),
+    ])
+    return { waiting, refused }
+  }
+
+  async keepWaiting(grades: readonly WaitingGrade[]): Promise<void> {
+    const db = await this.#open()
+    // Strict: resolved only when it is on the disk, so that a laptop which dies keeps it.
+    const transaction = db.transaction('waiting', 'readwrite', { durability: 'strict' })
+    for (const grade of grades) void transaction.store.put(this.#scoped(grade))
+    await transaction.done
+  }
+
+  async keepRefused(grades: readonly RefusedGrade[]): Promise<void> {
+    const db = await this.#open()
+    const transaction = db.transaction(['waiting', 'refused'], 'readwrite', { durability: 'strict' })
+    for (const grade of grades) {
+      void transaction.objectStore('refused').put(this.#scoped(grade))
+      void transaction.objectStore('waiting').delete([this.#scope, grade.body.id])
+    }
+    await transaction.done
+  }
+
+  async forget(kind: 'waiting' | 'refused', id: string): Promise<void> {
+    const db = await this.#open()
+    await db.delete(kind, [this.#scope, id])
+  }
+
+  /** The looks of the sitting, in the order in which they were given. */
+  async looks(): Promise<KeptLook[]> {
+    const db = await this.#open()
+    const kept = await db.getAll('looks', allOf(this.#scope))
+    return kept.map(({ look, at }) => ({ look, at })).sort((a, b) => a.at - b.at)
+  }
+
+  async keepLook(kept: KeptLook): Promise<void> {
+    const db = await this.#open()
+    await db.put('looks', { ...kept, scope: this.#scope, candidateId: kept.look.candidate.id })
+  }
+
+  async forgetLook(candidateId: number): Promise<void> {
+    const db = await this.#open()
+    await db.delete('looks', [this.#scope, candidateId])
+  }
+
+  async forgetLooks(): Promise<void> {
+    const db = await this.#open()
+    await db.delete('looks', allOf(this.#scope))
+  }
+
+  async close(): Promise<void> {
+    const opening = this.#opening
+    this.#opening = null
+    await opening?.then(
+      (db) => db.close(),
+      () => {},
+    )
+  }
+
+  #scoped<T extends WaitingGrade>(grade: T): Scoped<T> {
+    return { ...grade, scope: this.#scope, id: grade.body.id }
+  }
+
+  #open(): Promise<IDBPDatabase<Shape>> {
+    if (this.#opening) return this.#opening
+    const opening = connect(() => this.#forget(opening))
+    this.#opening = opening
+    opening.catch(() => this.#forget(opening))
+    return opening
+  }
+
+  #forget(opening: Promise<IDBPDatabase<Shape>>): void {
+    if (this.#opening === opening) this.#opening = null
+  }
+}
+
+async function connect(onClosed: () => void): Promise<IDBPDatabase<Shape>> {
+  return openDB<Shape>(NAME, 1, {
+    upgrade(fresh) {
+      fresh.createObjectStore('waiting', { keyPath: ['scope', 'id'] })
+      fresh.createObjectStore('refused', { keyPath: ['scope', 'id'] })
+      fresh.createObjectStore('looks', { keyPath: ['scope', 'candidateId'] })
+    },
+    // A newer page wants to change the database.
+    blocking(_now, _wanted, event) {
+      onClosed()
+      ;(event.target as IDBDatabase).close()
+    },
+    terminated: onClosed,
+  })
+}
