@@ -45,7 +45,8 @@ export interface CampaignSummary {
   survey: string
   acronym: string
   role: Role
-  /** How many people are to look at each candidate. */
+  method: Rule['method']
+  /** How many people are to look at each candidate, at most. */
   gradesWanted: number
   candidates: number
   imaged: number
@@ -59,6 +60,9 @@ export interface CampaignSummary {
 /** The campaigns that a person is in, newest first. Calibration candidates are counted only for graders, to whom they are like any other. */
 export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<CampaignSummary[]> {
   const wanted = sql<number>`(select grades_wanted from rule where rule.campaign_id = campaign.id order by version desc limit 1)`
+  const method = sql<
+    Rule['method']
+  >`(select method from rule where rule.campaign_id = campaign.id order by version desc limit 1)`
   const looks = lookSums(wanted)
   return db
     .selectFrom('membership')
@@ -71,6 +75,7 @@ export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<C
     .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
     .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
     .select((e) => [
+      method.as('method'),
       wanted.as('gradesWanted'),
       e.fn.count<number>('candidate.id').as('candidates'),
       e.fn.count<number>('candidate.imaged_at').as('imaged'),

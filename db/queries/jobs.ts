@@ -34,6 +34,17 @@ export async function insertJob(db: Kysely<DB>, job: NewJob): Promise<boolean> {
   return Number(result.numInsertedOrUpdatedRows ?? 0) > 0
 }
 
+/** A queued job of this key is due at this time, if it was not earlier. */
+export async function bringJobForward(db: Kysely<DB>, uniqueKey: string, runAfter: string): Promise<void> {
+  await db
+    .updateTable('job')
+    .set({ run_after: runAfter })
+    .where('unique_key', '=', uniqueKey)
+    .where('state', '=', sql.lit('queued'))
+    .where('run_after', '>', runAfter)
+    .execute()
+}
+
 /**
  * Takes the oldest job of these kinds that is due, or one whose holder's lease ran out (a killed process), and leases it. One
  * statement.

@@ -8,13 +8,16 @@ export interface LookSums {
 
 /**
  * Standing looks at imaged candidates, none counted above what is wanted, and looks wanted, by the rule or by a lead who
- * reopened; a candidate that a ruling has decided wants no more than it has. For queries that join `candidate` and
+ * reopened; a candidate that a ruling has decided, or that is settled, wants no more than it has. For queries that join `candidate` and
  * `ruling`, its standing one.
  */
 export function lookSums(gradesWanted: number | Expression<number>): Record<keyof LookSums, RawBuilder<number>> {
   const most = sql<number>`max(${gradesWanted}, candidate.looks_asked)`
   const given = sql<number>`min(candidate.grades_given, ${most})`
-  const wanted = sql<number>`case when ruling.outcome in ('confirmed', 'set aside') then ${given} else ${most} end`
+  const wanted = sql<number>`case
+    when ruling.outcome in ('confirmed', 'set aside') then ${given}
+    when candidate.settled = 1 then max(${given}, candidate.looks_asked)
+    else ${most} end`
   const ofImaged = (looks: RawBuilder<number>) =>
     sql<number>`coalesce(sum(case when candidate.imaged_at is not null then ${looks} end), 0)`
   return { given: ofImaged(given), wanted: ofImaged(wanted) }

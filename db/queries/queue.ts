@@ -6,6 +6,8 @@ export interface Asker {
   campaignId: number
   personId: number
   gradesWanted: number
+  /** Candidates that are settled want no more looks, unless a lead has asked for one. */
+  untilSettled: boolean
   now: string
 }
 
@@ -14,24 +16,40 @@ const DECIDING_RULINGS = ['confirmed', 'set aside'] as const
 /** Why a candidate still wants looks: the rule wants more, or a lead has asked for more than it wants. */
 type Wanted = 'by rule' | 'by lead' | 'either'
 
-/** The parts 'by rule' and 'by lead' share no candidate; each walks an index of its own, `candidate_queue` or `candidate_asked`. */
-const WANTED: Record<Wanted, (gradesWanted: number) => RawBuilder<SqlBool>> = {
-  'by rule': (wanted) => sql<SqlBool>`candidate.grades_given < ${wanted}`,
-  'by lead': (wanted) =>
-    sql<SqlBool>`candidate.looks_asked > candidate.grades_given and +candidate.grades_given >= ${wanted}`,
-  either: (wanted) => sql<SqlBool>`+candidate.grades_given < max(${wanted}, candidate.looks_asked)`,
+type WantedLooks = Pick<Asker, 'gradesWanted' | 'untilSettled'>
+
+/**
+ * The parts 'by rule' and 'by lead' share no candidate; each walks an index of its own: `candidate_queue`, or where looks end with
+ * settling `candidate_look`, and `candidate_asked`.
+ */
+const WANTED: Record<Wanted, (asker: WantedLooks) => RawBuilder<SqlBool>> = {
+  'by rule': ({ gradesWanted, untilSettled }) =>
+    untilSettled
+      ? sql<SqlBool>`candidate.settled = 0 and +candidate.grades_given < ${gradesWanted}`
+      : sql<SqlBool>`candidate.grades_given < ${gradesWanted}`,
+  'by lead': ({ gradesWanted, untilSettled }) =>
+    untilSettled
+      ? sql<SqlBool>`candidate.looks_asked > candidate.grades_given
+          and (+candidate.grades_given >= ${gradesWanted} or +candidate.settled = 1)`
+      : sql<SqlBool>`candidate.looks_asked > candidate.grades_given and +candidate.grades_given >= ${gradesWanted}`,
+  either: ({ gradesWanted, untilSettled }) =>
+    untilSettled
+      ? sql<SqlBool>`+candidate.grades_given < max(${gradesWanted}, candidate.looks_asked)
+          and (+candidate.settled = 0 or candidate.looks_asked > candidate.grades_given)`
+      : sql<SqlBool>`+candidate.grades_given < max(${gradesWanted}, candidate.looks_asked)`,
 }
 
 /**
  * Candidates that this person may still be shown: imaged, short of the wanted number, not decided by a ruling that stands,
  * never graded by them.
  */
-function openTo(db: Kysely<DB>, { campaignId, personId, gradesWanted }: Asker, wanted: Wanted) {
+function openTo(db: Kysely<DB>, asker: Asker, wanted: Wanted) {
+  const { campaignId, personId } = asker
   return db
     .selectFrom('candidate')
     .where('candidate.campaign_id', '=', campaignId)
     .where('candidate.imaged_at', 'is not', null)
-    .where(WANTED[wanted](gradesWanted))
+    .where(WANTED[wanted](asker))
     .where((e) =>
       e.or([
         e('candidate.ruling_id', 'is', null),
@@ -59,12 +77,16 @@ function openTo(db: Kysely<DB>, { campaignId, personId, gradesWanted }: Asker, w
     )
 }
 
-/** Room for one more person beside the grades that stand and the live leases of others. */
-function hasRoom({ personId, gradesWanted, now }: Asker) {
-  return sql<boolean>`candidate.grades_given + (
+function othersLeases({ personId, now }: Asker) {
+  return sql<number>`(
     select count(*) from lease other where other.candidate_id = candidate.id
       and other.person_id <> ${personId} and other.until > ${now}
-  ) < max(${gradesWanted}, candidate.looks_asked)`
+  )`
+}
+
+/** Room for one more person beside the grades that stand and the live leases of others. */
+function hasRoom(asker: Asker) {
+  return sql<boolean>`candidate.grades_given + ${othersLeases(asker)} < max(${asker.gradesWanted}, candidate.looks_asked)`
 }
 
 export interface QueuedCandidate {
@@ -91,24 +113,51 @@ export async function listLentCandidates(db: Kysely<DB>, asker: Asker, limit: nu
     .execute()
 }
 
-/**
- * What may be lent to this person next: those that a lead has reopened, then those nearest to their wanted number, so that
- * candidates get finished.
- */
-export async function listNextCandidates(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
-  const asked = await listNext(db, asker, 'by lead', limit)
-  const rest = limit - asked.length
-  return rest > 0 ? [...asked, ...(await listNext(db, asker, 'by rule', rest))] : asked
+/** What may be lent to this person next because a lead has reopened it. */
+export async function listNextByLead(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
+  return lendable(db, asker, 'by lead')
+    .select(SHOWN)
+    .orderBy('candidate.grades_given', 'desc')
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
 }
 
-function listNext(
-  db: Kysely<DB>,
-  asker: Asker,
-  wanted: 'by lead' | 'by rule',
-  limit: number,
-): Promise<QueuedCandidate[]> {
-  return openTo(db, asker, wanted)
+/** What may be lent to this person next: those nearest to their wanted number, so that candidates get finished. */
+export async function listNextByRule(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
+  return lendable(db, asker, 'by rule')
     .select(SHOWN)
+    .orderBy('candidate.grades_given', 'desc')
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
+}
+
+export interface ValuedCandidate extends QueuedCandidate {
+  /** Of its estimate; null without one. */
+  evidence: number | null
+  probability: number | null
+  grades: number | null
+  /** Live leases of other people. */
+  heldByOthers: number
+}
+
+/** What may be lent to this person next, where a look tells most first, with what its worth is judged by. */
+export async function listNextByValue(db: Kysely<DB>, asker: Asker, limit: number): Promise<ValuedCandidate[]> {
+  return lendable(db, asker, 'by rule')
+    .leftJoin('estimate', 'estimate.candidate_id', 'candidate.id')
+    .select(SHOWN)
+    .select(['estimate.evidence', 'estimate.probability', 'estimate.grades'])
+    .select(othersLeases(asker).as('heldByOthers'))
+    .orderBy('candidate.look_value', 'desc')
+    .orderBy('candidate.id')
+    .limit(limit)
+    .execute()
+}
+
+/** Open to this person, with room for one more look, and not on their bench yet. */
+function lendable(db: Kysely<DB>, asker: Asker, wanted: 'by lead' | 'by rule') {
+  return openTo(db, asker, wanted)
     .where(hasRoom(asker))
     .where((e) =>
       e.not(
@@ -121,10 +170,18 @@ function listNext(
         ),
       ),
     )
-    .orderBy('candidate.grades_given', 'desc')
-    .orderBy('candidate.id')
-    .limit(limit)
-    .execute()
+}
+
+/** Live leases of everybody else in the campaign. */
+export async function countOthersLeases(db: Kysely<DB>, { campaignId, personId, now }: Asker): Promise<number> {
+  const row = await db
+    .selectFrom('lease')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '!=', personId)
+    .where('until', '>', now)
+    .executeTakeFirstOrThrow()
+  return row.n
 }
 
 /** How many candidates this person may still be shown, those on other people's benches included. */

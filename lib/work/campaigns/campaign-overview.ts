@@ -12,6 +12,7 @@ import type { RunSummary } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { askerOf } from './asker'
 import { candidateScope } from './candidate-scope'
 import { ruleInForce, type RuleInForce } from './rule-in-force'
 
@@ -66,7 +67,7 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     ruleInForce(db, campaign.id),
     countCandidates(db, campaign.id, counted.withCalibration),
   ])
-  const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted: rule.gradesWanted, now: isoTime() }
+  const asker = askerOf(campaign.id, viewer.id, rule, isoTime())
   const [grading, left, lookedAt, outcome, upkeep] = await Promise.all([
     sumLooks(db, counted, rule.gradesWanted),
     role === 'viewer' ? 0 : countOpenCandidates(db, asker),

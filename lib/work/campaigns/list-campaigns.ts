@@ -7,6 +7,7 @@ import type { Role } from '@/db/schema/people'
 import { isoTime } from '@/lib/platform/clock'
 import { signInNeeded } from '@/lib/platform/problems/problem'
 import type { Viewer } from '@/lib/work/people/viewer'
+import { askerOf } from './asker'
 
 export interface CampaignCard {
   slug: string
@@ -32,14 +33,14 @@ export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Prom
   const now = isoTime()
   const rows = await listCampaignRows(db, viewer.id)
   return Promise.all(
-    rows.map(async ({ id, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
+    rows.map(async ({ id, method, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
       ...row,
       gradesGiven: looksGiven,
       gradesWanted: looksWanted,
       left:
         row.role === 'viewer'
           ? null
-          : await countOpenCandidates(db, { campaignId: id, personId: viewer.id, gradesWanted, now }),
+          : await countOpenCandidates(db, askerOf(id, viewer.id, { method, gradesWanted }, now)),
       confirmed: row.role === 'grader' ? null : confirmed,
       split: row.role === 'grader' ? null : split,
     })),

@@ -22,7 +22,9 @@ import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict, invalid, notFound } from '@/lib/platform/problems/problem'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { keepEstimate } from '@/lib/work/queue/keep-estimates'
 import { askAnsweredBy } from './asked-answer'
+import { consensusDelayMs } from './consensus-due'
 import type { GradeInput } from './grade-input'
 
 export interface GivenGrade {
@@ -42,9 +44,6 @@ export interface RecordedGrade {
   /** The id of the grade that this call corrected. */
   replaced?: string
 }
-
-/** Grades of one moment are judged by one consensus run. */
-const CONSENSUS_DELAY_MS = 2000
 
 /**
  * Records a person's grade of a candidate: the first one, the answer to an asked look, which takes no place of the wanted
@@ -96,8 +95,11 @@ export async function recordGrade(
     const first = !corrected && !ask
     if (ask) await setAskAnswered(transaction, { id: ask.id, gradeId: row.id, candidateId, personId: viewer.id })
     if (first) await setFirstGradeGiven(transaction, candidateId, viewer.id)
-    if (ask || candidate.grades_given + (first ? 1 : 0) >= rule.leastGrades)
-      await requestConsensus(transaction, campaign.id, CONSENSUS_DELAY_MS)
+    await keepEstimate(transaction, campaign.id, rule, candidateId)
+    const enough = rule.method === 'reliability' || candidate.grades_given + (first ? 1 : 0) >= rule.leastGrades
+    if (ask || enough) {
+      await requestConsensus(transaction, campaign.id, await consensusDelayMs(transaction, campaign.id, rule, row))
+    }
     return { row, replaced: corrected?.uid ?? null }
   })
   return {

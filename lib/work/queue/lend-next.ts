@@ -1,22 +1,12 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import {
-  deleteExpiredLeases,
-  hasImagedCandidate,
-  insertLeases,
-  listLentCandidates,
-  listNextCandidates,
-  setLeasesUntil,
-  type QueuedCandidate,
-} from '@/db/queries/queue'
+import { hasImagedCandidate, type QueuedCandidate } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
-import { isoTime } from '@/lib/platform/clock'
-import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
-import { askedLooks, besides, type AskedLook } from './asked-looks'
-import { LEASE_MS, MOST_LENT } from './lease-time'
+import type { AskedLook } from './asked-looks'
+import { lendCandidates } from './lend-candidates'
 import { queueProgress, type QueueProgress } from './queue-progress'
 
 /** What a grader gets to see of a candidate before grading it: nothing that others, the machine or the rule made of it. */
@@ -33,40 +23,10 @@ export interface LentQueue extends QueueProgress {
   imaged: boolean
 }
 
-/**
- * The next candidates for this person: first the looks that were asked of them, then, lent for LEASE_MINUTES, what they hold
- * already, in the same order and renewed, and new ones. One immediate transaction reads the room that is left and takes it, so standing grades and live leases together
- * never exceed the wanted number, however many ask at once.
- */
+/** The next candidates for this person with their pictures, lent as `lendCandidates` says, and how far they are. */
 export async function lendNext(db: Kysely<DB>, permit: CampaignPermit<'grade'>, count: number): Promise<LentQueue> {
-  const { campaign, viewer } = permit
-  const wanted = Math.min(count, MOST_LENT)
-  const lent = await db.transaction().execute(async (transaction) => {
-    const { gradesWanted } = await ruleInForce(transaction, campaign.id)
-    const now = isoTime()
-    const until = isoTime(LEASE_MS)
-    const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted, now }
-    await deleteExpiredLeases(transaction, campaign.id, now)
-    const asked = await askedLooks(transaction, asker, wanted)
-    const room = wanted - asked.length
-    const held = besides(asked, await listLentCandidates(transaction, asker, wanted)).slice(0, room)
-    if (held.length > 0) {
-      const ids = held.map(({ id }) => id)
-      await setLeasesUntil(transaction, viewer.id, ids, until)
-    }
-    const next =
-      held.length < room
-        ? besides(asked, await listNextCandidates(transaction, asker, wanted - held.length)).slice(
-            0,
-            room - held.length,
-          )
-        : []
-    if (next.length > 0) {
-      const candidateIds = next.map(({ id }) => id)
-      await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
-    }
-    return { candidates: [...asked, ...held, ...next], until }
-  })
+  const { campaign } = permit
+  const lent = await lendCandidates(db, permit, count)
   const pictures = await picturesOf(
     db,
     campaign,

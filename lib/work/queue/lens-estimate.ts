@@ -31,7 +31,9 @@ export interface ReadyModel {
   newcomer: GraderRates
   newcomerWeights: readonly number[]
   leftOut: ReadonlySet<number>
-  /** mean rates of the graders who count: those of whoever comes next */
+  /** rates of everybody who has given a grade that counts; those of a newcomer where nobody has */
+  everybody: readonly GraderRates[]
+  /** their mean: those of whoever comes next */
   usual: GraderRates
 }
 
@@ -40,6 +42,7 @@ export function readyModel(model: RunModel): ReadyModel {
   const rates = new Map<number, GraderRates>(model.graders.map((grader) => [grader.personId, grader]))
   const weights = new Map(model.graders.map((grader) => [grader.personId, gradeWeights(grader)]))
   const counted = model.graders.filter(({ personId, grades }) => !leftOut.has(personId) && grades > 0)
+  const everybody = counted.length > 0 ? counted : [model.newcomer]
   return {
     lensShare: model.lensShare,
     prior: logOddsOf(model.lensShare),
@@ -48,7 +51,8 @@ export function readyModel(model: RunModel): ReadyModel {
     newcomer: model.newcomer,
     newcomerWeights: gradeWeights(model.newcomer),
     leftOut,
-    usual: counted.length > 0 ? meanRates(counted) : model.newcomer,
+    everybody,
+    usual: meanRates(everybody),
   }
 }
 

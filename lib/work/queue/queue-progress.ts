@@ -6,6 +6,7 @@ import type { DB } from '@/db/schema'
 import { isoTime } from '@/lib/platform/clock'
 import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { askerOf } from '@/lib/work/campaigns/asker'
 
 export interface QueueProgress {
   /** Looks this person has given: candidates graded, and looks that they were asked for. */
@@ -16,8 +17,7 @@ export interface QueueProgress {
 
 export async function queueProgress(db: Kysely<DB>, permit: CampaignPermit<'grade'>): Promise<QueueProgress> {
   const { campaign, viewer } = permit
-  const { gradesWanted } = await ruleInForce(db, campaign.id)
-  const asker = { campaignId: campaign.id, personId: viewer.id, gradesWanted, now: isoTime() }
+  const asker = askerOf(campaign.id, viewer.id, await ruleInForce(db, campaign.id), isoTime())
   const asks = await countAsks(db, asker)
   return {
     given: (await countGradedCandidates(db, campaign.id, viewer.id)) + asks.answered,

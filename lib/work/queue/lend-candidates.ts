@@ -1,0 +1,113 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import {
+  countOthersLeases,
+  deleteExpiredLeases,
+  insertLeases,
+  listLentCandidates,
+  listNextByLead,
+  listNextByRule,
+  listNextByValue,
+  setLeasesUntil,
+  type Asker,
+  type QueuedCandidate,
+} from '@/db/queries/queue'
+import type { DB } from '@/db/schema'
+import type { IsoTime } from '@/db/schema/values'
+import { isoTime } from '@/lib/platform/clock'
+import { waldBoundaries } from '@/lib/science/agreement/sequential-test'
+import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import type { CampaignPermit } from '@/lib/work/people/permission'
+import { askedLooks, besides, type AskedCandidate } from './asked-looks'
+import { askerOf } from '@/lib/work/campaigns/asker'
+import { chooseLooks } from './choose-looks'
+import { LEASE_MS, MOST_LENT } from './lease-time'
+import { ratesIn } from './lens-estimate'
+import { newestModel } from './model-of-run'
+
+export interface LentCandidates {
+  candidates: (QueuedCandidate | AskedCandidate)[]
+  /** When the leases run out, unless asked again before. */
+  until: IsoTime
+}
+
+/**
+ * The next candidates for this person: first the looks that were asked of them, then, lent for LEASE_MINUTES, what they hold
+ * already, in the same order and renewed, and new ones. One immediate transaction reads the room that is left and takes it, so
+ * standing grades and live leases together never exceed the wanted number, however many ask at once.
+ */
+export async function lendCandidates(
+  db: Kysely<DB>,
+  { campaign, viewer }: CampaignPermit<'grade'>,
+  count: number,
+): Promise<LentCandidates> {
+  const wanted = Math.min(count, MOST_LENT)
+  return db.transaction().execute(async (transaction) => {
+    const rule = await ruleInForce(transaction, campaign.id)
+    const now = isoTime()
+    const until = isoTime(LEASE_MS)
+    const asker = askerOf(campaign.id, viewer.id, rule, now)
+    await deleteExpiredLeases(transaction, campaign.id, now)
+    const asked = await askedLooks(transaction, asker, wanted)
+    const room = wanted - asked.length
+    const held = besides(asked, await listLentCandidates(transaction, asker, wanted)).slice(0, room)
+    if (held.length > 0) {
+      const ids = held.map(({ id }) => id)
+      await setLeasesUntil(transaction, viewer.id, ids, until)
+    }
+    const more = room - held.length
+    const next =
+      more > 0 ? besides(asked, await listNext(transaction, asker, rule, more + asked.length)).slice(0, more) : []
+    if (next.length > 0) {
+      const candidateIds = next.map(({ id }) => id)
+      await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
+    }
+    return { candidates: [...asked, ...held, ...next], until }
+  })
+}
+
+/** Those that a lead has reopened come before what the rule wants. */
+async function listNext(
+  transaction: Kysely<DB>,
+  asker: Asker,
+  rule: RuleInForce,
+  limit: number,
+): Promise<QueuedCandidate[]> {
+  const reopened = await listNextByLead(transaction, asker, limit)
+  const rest = limit - reopened.length
+  if (rest <= 0) return reopened
+  const wanted =
+    rule.method === 'mean'
+      ? await listNextByRule(transaction, asker, rest)
+      : await listMostInformative(transaction, asker, rule, rest)
+  return [...reopened, ...wanted]
+}
+
+/** Candidates among which a grader's next is chosen, and one more for each that somebody else holds, up to the most. */
+const IN_REACH = 100
+const MOST_IN_REACH = 300
+
+/** Of the candidates whose next look tells most, those that a look of this grader settles likelier than another's. */
+async function listMostInformative(
+  transaction: Kysely<DB>,
+  asker: Asker,
+  rule: Extract<RuleInForce, { method: 'reliability' }>,
+  limit: number,
+): Promise<QueuedCandidate[]> {
+  const others = await countOthersLeases(transaction, asker)
+  const rows = await listNextByValue(transaction, asker, Math.min(IN_REACH + others, MOST_IN_REACH))
+  const run = await newestModel(transaction, asker.campaignId)
+  const inReach = rows.map(({ evidence, probability, grades, ...row }) => ({
+    ...row,
+    evidence: evidence ?? 0,
+    probability: probability ?? run?.model.lensShare ?? 0.5,
+    grades: grades ?? 0,
+  }))
+  const chooser = {
+    own: run ? ratesIn(run.model, asker.personId) : { lens: [], notLens: [] },
+    everybody: run?.model.everybody ?? [],
+    boundaries: waldBoundaries(rule),
+    leastGrades: rule.leastGrades,
+  }
+  return chooseLooks(inReach, chooser, limit).map(({ id, name, raDeg, decDeg }) => ({ id, name, raDeg, decDeg }))
+}
