@@ -76,3 +76,15 @@ export async function insertLeftOut(
     .executeTakeFirstOrThrow()
   return id
 }
+
+/** The person's looks of the campaign, corrections not counted. */
+export async function countLooksOf(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
+  const row = await db
+    .selectFrom('grade')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .where('replaces', 'is', null)
+    .executeTakeFirstOrThrow()
+  return row.n
+}

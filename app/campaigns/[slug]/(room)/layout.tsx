@@ -23,6 +23,7 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
           { href: `${home}/what-if`, label: 'What if' },
         ]
       : []),
+    ...(permit.role === 'grader' ? [] : [{ href: `${home}/agreement`, label: 'Agreement' }]),
     { href: `${home}/catalogue`, label: 'Catalogue', count: count('confirmed') },
     ...(lead
       ? [

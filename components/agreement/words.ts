@@ -1,0 +1,35 @@
+import type { Interval } from '@/lib/science/agreement/binomial-intervals'
+import type { ShareEstimate } from '@/lib/work/reports/report-types'
+
+/** `91 %`; neither 0 nor 100 unless it is. */
+export function percentOf(share: number): string {
+  if (share <= 0 || share >= 1) return `${Math.round(share * 100)} %`
+  return `${Math.min(99, Math.max(1, Math.round(share * 100)))} %`
+}
+
+/** `91 % (84 to 96 %)` */
+export function shareInWords({ value, interval }: ShareEstimate): string {
+  return `${percentOf(value)} (${Math.round(interval.low * 100)} to ${Math.round(interval.high * 100)} %)`
+}
+
+/** `0.61`, with a true minus sign; `–` for none. */
+export function coefficient(value: number | null): string {
+  return value === null ? '–' : value.toFixed(2).replace('-', '−')
+}
+
+/** `0.61 (0.55 to 0.67)` */
+export function coefficientWithInterval(value: number | null, interval: Interval | null): string {
+  if (value === null || !interval) return coefficient(value)
+  return `${coefficient(value)} (${coefficient(interval.low)} to ${coefficient(interval.high)})`
+}
+
+/** `3.2 s`, `1 min 5 s` */
+export function secondsInWords(seconds: number): string {
+  if (seconds < 60) return `${seconds.toFixed(seconds < 10 ? 1 : 0)} s`
+  return `${Math.floor(seconds / 60)} min ${Math.round(seconds % 60)} s`
+}
+
+/** `1.2`, `12`, `1,204`: looks a day. */
+export function paceInWords(pace: number): string {
+  return pace.toLocaleString('en', { maximumFractionDigits: pace < 10 ? 1 : 0 })
+}

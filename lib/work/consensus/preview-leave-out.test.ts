@@ -1,0 +1,65 @@
+import { describe, expect, it } from 'vitest'
+import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
+import { decisionRows, giveGrades } from './_give-grade'
+import { leaveOut } from './leave-out'
+import { previewLeaveOut } from './preview-leave-out'
+import { runConsensus } from './run-consensus'
+
+const RULE = { gradesWanted: 4, leastGrades: 3, confirmMean: 2, setAsideMean: 1, splitSpread: 1 }
+
+async function judgedScenario() {
+  const scenario = await makeScenario(RULE)
+  const { db, campaign, graders } = scenario
+  const permit = await scenario.permit(scenario.lead, 'lead')
+  // Without the fourth grader: torn is three A, near is three N, and lean has two grades only.
+  for (const [name, letters] of Object.entries({ torn: 'AAAN', near: 'NNNA', lean: 'AA.A', sure: 'AAAA' })) {
+    const id = await addImagedCandidate(db, campaign, name)
+    for (const [at, letter] of [...letters].entries()) {
+      if (letter !== '.') await giveGrades(db, campaign, id, [graders[at]], letter)
+    }
+  }
+  await runConsensus(db, permit)
+  return { ...scenario, permit }
+}
+
+describe('what leaving a grader out would change', () => {
+  it('is told before it is done, writes nothing, and is what the next run then does', async () => {
+    const { db, permit, graders } = await judgedScenario()
+    const before = await decisionRows(db)
+    const preview = await previewLeaveOut(db, permit, graders[3].id)
+    expect(await decisionRows(db)).toEqual(before)
+    // By hand: AAAN and NNNA have a spread of 1.3, above 1, and are split with the fourth grade, clear without it; lean falls
+    // below three grades.
+    expect(preview).toMatchObject({ name: 'whimbrel', looks: 4, leftOut: null, keptByRuling: 0 })
+    expect(preview.moves).toHaveLength(3)
+    expect(preview.moves).toEqual(
+      expect.arrayContaining([
+        { from: 'split', to: 'confirmed', candidates: 1 },
+        { from: 'split', to: 'set aside', candidates: 1 },
+        { from: 'confirmed', to: 'open', candidates: 1 },
+      ]),
+    )
+    await leaveOut(db, permit, { personId: graders[3].id, leftOut: true, reason: 'Keys swapped' })
+    await runConsensus(db, permit)
+    const states = await db.selectFrom('candidate').select(['name', 'state']).orderBy('id').execute()
+    expect(Object.fromEntries(states.map(({ name, state }) => [name, state]))).toEqual({
+      torn: 'confirmed',
+      near: 'set aside',
+      lean: 'open',
+      sure: 'confirmed',
+    })
+    const back = await previewLeaveOut(db, permit, graders[3].id)
+    expect(back.leftOut).toMatchObject({ reason: 'Keys swapped' })
+    expect(back.moves).toEqual(expect.arrayContaining([{ from: 'open', to: 'confirmed', candidates: 1 }]))
+  })
+
+  it('changes nothing where the person has not graded', async () => {
+    const { db, permit, lead } = await judgedScenario()
+    expect(await previewLeaveOut(db, permit, lead.id)).toMatchObject({ looks: 0, moves: [], keptByRuling: 0 })
+  })
+
+  it('is refused for somebody who was never a member', async () => {
+    const { db, permit, stranger } = await judgedScenario()
+    await expect(previewLeaveOut(db, permit, stranger.id)).rejects.toMatchObject({ status: 404 })
+  })
+})
