@@ -57,13 +57,15 @@ export async function ruleOnCandidate(
 }
 
 /**
- * Reopening a candidate that has all its looks asks for one more; again reopened it is one more again. Any other ruling takes back
- * what was asked for and not given. The looks that stand are never above the larger of what is asked and what the rule wants.
+ * Reopening a candidate that has all its looks, or is settled, asks for one more; again reopened it is one more again. Any other
+ * ruling takes back what was asked for and not given. The looks that stand are never above the larger of what is asked and what
+ * the rule wants.
  */
 function looksAskedBy(outcome: RulingInput['outcome'], candidate: Candidate, gradesWanted: number): number {
   const { grades_given: given, looks_asked: asked } = candidate
   if (outcome !== 'open') return Math.min(asked, given)
-  return given >= Math.max(gradesWanted, asked) ? given + 1 : asked
+  const wantsNone = given >= Math.max(gradesWanted, asked) || (candidate.settled === 1 && given >= asked)
+  return wantsNone ? given + 1 : asked
 }
 
 async function assertCanRule(db: Kysely<DB>, candidate: Candidate, ruling: RulingInput): Promise<void> {
