@@ -1,5 +1,5 @@
 // npm run bench: speed as ratios in one run, against scripts of fixtures/peers and against floors. Never part of the check.
-// A word after it chooses: npm run bench -- imaging
+// A word after it chooses, a number a smaller size where a benchmark takes one: npm run bench -- intake 300
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
 import { benchConsensus } from './bench-consensus'
@@ -10,7 +10,7 @@ import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
 import { benchVotable } from './bench-votable'
 
-const BENCHES: Record<string, () => Promise<string[]>> = {
+const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   imaging: benchImaging,
   intake: benchIntake,
   'lens-light': () => benchLensLight(),
@@ -23,7 +23,9 @@ const BENCHES: Record<string, () => Promise<string[]>> = {
 process.env.RINGSIDE_PEERS ??= 'fixtures/peers'
 process.env.RINGSIDE_PYTHON ??= '/usr/bin/python3'
 
-const wanted = process.argv.slice(2)
+const words = process.argv.slice(2)
+const wanted = words.filter((word) => !/^[1-9]\d*$/.test(word))
+const size = words.map(Number).find((number) => number > 0)
 const unknown = wanted.filter((name) => !(name in BENCHES))
 if (unknown.length) {
   console.error(`No benchmark is called ${unknown.join(', ')}; there are: ${Object.keys(BENCHES).join(', ')}.`)
@@ -32,6 +34,6 @@ if (unknown.length) {
 console.log(`${availableParallelism()} processors, ${Math.round(totalmem() / 2 ** 30)} GiB, Node ${process.version}\n`)
 for (const [name, bench] of Object.entries(BENCHES)) {
   if (wanted.length && !wanted.includes(name)) continue
-  console.log((await bench()).join('\n') + '\n')
+  console.log((await bench(size)).join('\n') + '\n')
 }
 await closeImagePool()
