@@ -2,26 +2,20 @@ import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { CANNOT_JUDGE } from '@/lib/science/agreement/grade-table'
 import { LENS } from '@/lib/science/agreement/lens-model'
 import { gradeWeight, probabilityOf } from '@/lib/science/agreement/posterior'
-import { betaQuantile } from '@/lib/science/agreement/quantiles'
 import type { GradeSheet } from './grade-sheet'
 import type { LensFit } from './lens-fit'
 import type { Drift, DriftChange, DriftWindow, ShareEstimate } from './report-types'
+import { estimateTwoRates, shareOfEffective, type JudgedGrade } from './two-rates'
 
 /** Grades of a window: an eighth of a person's own, at least 40. Our choice, no source. */
 const LEAST_WINDOW = 40
 const WINDOWS_WIDE = 8
 /** A first and a last third are compared from this many grades on. Our choice, no source. */
 const LEAST_FOR_CHANGE = 90
-/** Expected lenses, or others, that a third must hold for its share to be compared. Our choice, no source. */
+/** Lenses, or others, that a window must be worth for its share to be told, and a third to be compared. Our choice, no source. */
+const LEAST_IN_WINDOW = 1
 const LEAST_IN_THIRD = 8
 const GRADES_SAYING_LENS = 2
-
-/** One grade of a person: when, whether A or B, and the probability of a lens by everything but this grade. */
-export interface JudgedGrade {
-  at: number
-  saysLens: boolean
-  probability: number
-}
 
 /**
  * A person's counted grades in the order in which they were given, each beside what the others' grades say of the candidate
@@ -51,7 +45,7 @@ export function judgedGrades(
 
 /**
  * Reliability in sliding windows of a person's own grades, each half over the one before: the share of lenses to which they
- * gave A or B and of the rest to which they gave C or N, every grade counted by the probability that the candidate is one.
+ * gave A or B and of the rest to which they gave C or N, both estimated from the window alone.
  */
 export function measureDrift(judged: readonly JudgedGrade[]): Drift {
   const size = Math.max(LEAST_WINDOW, Math.ceil(judged.length / WINDOWS_WIDE))
@@ -65,7 +59,7 @@ export function measureDrift(judged: readonly JudgedGrade[]): Drift {
       to,
       fromAt: judged[from].at,
       toAt: judged[to - 1].at,
-      ...sharesOf(judged.slice(from, to), 1),
+      ...sharesOf(judged.slice(from, to), LEAST_IN_WINDOW),
     })
   }
   return { size, windows, change: changeOf(judged) }
@@ -89,28 +83,11 @@ function changeOf(judged: readonly JudgedGrade[]): DriftChange | null {
   return changes.sort((a, b) => size(b) - size(a))[0] ?? null
 }
 
+/** @param least effective number of lenses, or others, below which a share is not told */
 function sharesOf(judged: readonly JudgedGrade[], least: number): Pick<DriftWindow, 'lensesSeen' | 'nonLensesSeen'> {
-  const sums = { lenses: 0, seen: 0, others: 0, othersSeen: 0 }
-  for (const { saysLens, probability } of judged) {
-    sums.lenses += probability
-    sums.others += 1 - probability
-    if (saysLens) sums.seen += probability
-    else sums.othersSeen += 1 - probability
-  }
+  const { seen, passed, lenses, others } = estimateTwoRates(judged)
   return {
-    lensesSeen: sums.lenses < least ? null : expectedShare(sums.seen, sums.lenses),
-    nonLensesSeen: sums.others < least ? null : expectedShare(sums.othersSeen, sums.others),
-  }
-}
-
-/**
- * Share of expected counts with the interval of Jeffreys' prior, equal tails at 95 %: binomial-intervals.ts has it for whole
- * counts; expected ones are whole only where the truth is known. @param x of n, 0 <= x <= n, n > 0.
- */
-export function expectedShare(x: number, n: number): ShareEstimate {
-  const rest = Math.max(0, n - x)
-  return {
-    value: x / n,
-    interval: { low: betaQuantile(0.025, x + 0.5, rest + 0.5), high: betaQuantile(0.975, x + 0.5, rest + 0.5) },
+    lensesSeen: lenses < least ? null : shareOfEffective(seen, lenses),
+    nonLensesSeen: others < least ? null : shareOfEffective(passed, others),
   }
 }

@@ -38,6 +38,7 @@ const GRADES = 4
 const CLASSES = 2
 const TOLERANCE = 1e-6
 const MOST_ITERATIONS = 500
+const OUT_ITERATIONS = 20
 
 /**
  * Reliabilities of the graders and probabilities of the candidates: by the newest run's model where it has one, else fitted
@@ -83,6 +84,12 @@ function startOf(sheet: GradeSheet, model: RunModel) {
   return { classShares: [model.lensShare, 1 - model.lensShare], confusion }
 }
 
+/** No grades make it certain that a search holds none, or only lenses: half a candidate is left. */
+function awayFromEnds(share: number, candidates: number): number {
+  const edge = 1 / (2 * (candidates + 1))
+  return Math.min(1 - edge, Math.max(edge, share))
+}
+
 function finish(
   sheet: GradeSheet,
   isOut: readonly boolean[],
@@ -91,13 +98,8 @@ function finish(
   converged: boolean,
   source: FitSource,
 ): LensFit {
-  const counts = countsAgainst(sheet, em.posterior)
   const confusion = em.confusion()
-  const perGrader = CLASSES * GRADES
-  for (const [grader, out] of isOut.entries()) {
-    if (!out) continue
-    for (let c = 0; c < CLASSES; c++) smoothRow(counts, confusion, grader * perGrader + c * GRADES, c)
-  }
+  const counts = countsAgainst(sheet, em.posterior, isOut, confusion)
   const fit: DawidSkeneFit = {
     classes: CLASSES,
     grades: GRADES,
@@ -113,7 +115,8 @@ function finish(
     change: 0,
   }
   const rates = ratesOfGraders(fit)
-  const logOdds = new Float64Array(sheet.candidates.length).fill(logOddsOf(em.shares[LENS]))
+  const lensShare = source === 'run' ? em.shares[LENS] : awayFromEnds(em.shares[LENS], sheet.candidates.length)
+  const logOdds = new Float64Array(sheet.candidates.length).fill(logOddsOf(lensShare))
   for (let at = 0; at < sheet.answers; at++) {
     if (included[at]) logOdds[sheet.candidateOf[at]] += gradeWeight(rates[sheet.graderOf[at]], sheet.gradeOf[at])
   }
@@ -122,26 +125,64 @@ function finish(
       ? em.posterior[candidate * CLASSES + LENS]
       : Number(sheet.truth[candidate] === LENS),
   )
-  return { source, converged, lensShare: em.shares[LENS], rates, logOdds, probability, fit }
+  return { source, converged, lensShare, rates, logOdds, probability, fit }
 }
 
-/** How often each grader met each class, as far as it is known, and gave each grade. */
-function countsAgainst(sheet: GradeSheet, posterior: Float64Array): Float64Array {
-  const counts = new Float64Array(sheet.graders.length * CLASSES * GRADES)
-  for (let at = 0; at < sheet.answers; at++) {
-    const grade = sheet.gradeOf[at]
-    if (!sheet.counts[at] || grade === CANNOT_JUDGE) continue
-    const row = sheet.graderOf[at] * CLASSES * GRADES + grade
-    counts[row + LENS * GRADES] += posterior[sheet.candidateOf[at] * CLASSES + LENS]
-    counts[row + NOT_A_LENS * GRADES] += posterior[sheet.candidateOf[at] * CLASSES + NOT_A_LENS]
+/**
+ * How often each grader met each class, as far as it is known, and gave each grade. Who is left out is fitted against the
+ * others' posterior, which stays as it is; their rows of `confusion` are written.
+ */
+function countsAgainst(
+  sheet: GradeSheet,
+  posterior: Float64Array,
+  isOut: readonly boolean[],
+  confusion: Float64Array,
+): Float64Array {
+  const counts = new Float64Array(confusion.length)
+  const out = [...isOut.keys()].filter((grader) => isOut[grader])
+  for (const grader of out) smoothRows(counts, confusion, grader)
+  for (let iteration = 0; iteration < (out.length > 0 ? OUT_ITERATIONS : 1); iteration++) {
+    counts.fill(0)
+    addCounts(sheet, posterior, isOut, confusion, counts)
+    for (const grader of out) smoothRows(counts, confusion, grader)
   }
   return counts
 }
 
-function smoothRow(counts: Float64Array, confusion: Float64Array, from: number, c: number): void {
-  let total = 0
-  for (let grade = 0; grade < GRADES; grade++) total += counts[from + grade] + LENS_PSEUDO_COUNTS[c * GRADES + grade]
-  for (let grade = 0; grade < GRADES; grade++) {
-    confusion[from + grade] = (counts[from + grade] + LENS_PSEUDO_COUNTS[c * GRADES + grade]) / total
+function addCounts(
+  sheet: GradeSheet,
+  posterior: Float64Array,
+  isOut: readonly boolean[],
+  confusion: Float64Array,
+  counts: Float64Array,
+): void {
+  for (let at = 0; at < sheet.answers; at++) {
+    const grade = sheet.gradeOf[at]
+    if (!sheet.counts[at] || grade === CANNOT_JUDGE) continue
+    const grader = sheet.graderOf[at]
+    const row = grader * CLASSES * GRADES + grade
+    let lens = posterior[sheet.candidateOf[at] * CLASSES + LENS]
+    let other = posterior[sheet.candidateOf[at] * CLASSES + NOT_A_LENS]
+    if (isOut[grader]) {
+      lens *= confusion[row + LENS * GRADES]
+      other *= confusion[row + NOT_A_LENS * GRADES]
+      const total = lens + other
+      lens /= total
+      other /= total
+    }
+    counts[row + LENS * GRADES] += lens
+    counts[row + NOT_A_LENS * GRADES] += other
+  }
+}
+
+/** The rates of a grader from their counts and the pseudo-counts of the model. */
+function smoothRows(counts: Float64Array, confusion: Float64Array, grader: number): void {
+  for (let c = 0; c < CLASSES; c++) {
+    const from = (grader * CLASSES + c) * GRADES
+    let total = 0
+    for (let grade = 0; grade < GRADES; grade++) total += counts[from + grade] + LENS_PSEUDO_COUNTS[c * GRADES + grade]
+    for (let grade = 0; grade < GRADES; grade++) {
+      confusion[from + grade] = (counts[from + grade] + LENS_PSEUDO_COUNTS[c * GRADES + grade]) / total
+    }
   }
 }

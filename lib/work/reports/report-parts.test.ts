@@ -3,12 +3,13 @@ import { readFixture } from '@/lib/science/agreement/_fixtures'
 import { jeffreysInterval } from '@/lib/science/agreement/binomial-intervals'
 import { sheetOf } from './_sheet'
 import { measureCalibration } from './calibration-report'
-import { expectedShare, measureDrift, type JudgedGrade } from './drift'
+import { measureDrift } from './drift'
 import { countPerDay } from './grades-per-day'
 import { medianOf } from './grader-report'
 import { fitLenses } from './lens-fit'
 import { findQuickStretch } from './quick-stretch'
 import { measureScore } from './score-report'
+import { estimateTwoRates, shareOfEffective, type JudgedGrade } from './two-rates'
 import { nearnessOfGraders } from './typical-agreement'
 
 const candidate = { id: 1, truth: null, imaged: 1, settled: 0, given: 0, asked: 0, ruled: 0 } as const
@@ -111,9 +112,40 @@ describe('drift', () => {
     expect(found.change).toMatchObject({ what: 'what is no lens', before: { value: 1 }, after: { value: 0.5 } })
   })
 
-  it('counts by probability: with whole ones its interval is Jeffreys’ own', () => {
-    expect(expectedShare(7, 20).interval.low).toBeCloseTo(jeffreysInterval(7, 20)!.low, 12)
-    expect(expectedShare(7, 20).interval.high).toBeCloseTo(jeffreysInterval(7, 20)!.high, 12)
+  it('has Jeffreys’ own interval and the plain shares where the truth is known', () => {
+    // 7 of 20 lenses and 30 of 40 others.
+    const answers = [7, 13].flatMap((count, side) => Array<boolean>(count).fill(side === 0))
+    const others = [10, 30].flatMap((count, side) => Array<boolean>(count).fill(side === 0))
+    const found = estimateTwoRates([
+      ...answers.map((saysLens) => ({ at: 0, saysLens, probability: 1 })),
+      ...others.map((saysLens) => ({ at: 0, saysLens, probability: 0 })),
+    ])
+    expect(found.seen).toBeCloseTo(7 / 20, 12)
+    expect(found.passed).toBeCloseTo(30 / 40, 12)
+    expect(found.lenses).toBeCloseTo(20, 9)
+    expect(found.others).toBeCloseTo(40, 9)
+    const { interval } = shareOfEffective(7 / 20, 20)
+    expect(interval.low).toBeCloseTo(jeffreysInterval(7, 20)!.low, 10)
+    expect(interval.high).toBeCloseTo(jeffreysInterval(7, 20)!.high, 10)
+  })
+
+  it('is not pulled by vague probabilities: grades as the rates make them give the rates back', () => {
+    // P(says lens) = p s + (1 - p)(1 - t) with s = 0.9, t = 0.8: 0.27 at p = 0.1 and 0.69 at p = 0.7, of 1000 each.
+    const group = (probability: number, saying: number) =>
+      Array.from({ length: 1000 }, (_, at) => ({ at, saysLens: at < saying, probability }))
+    const found = estimateTwoRates([...group(0.1, 270), ...group(0.7, 690)])
+    expect(found.seen).toBeCloseTo(0.9, 2)
+    expect(found.passed).toBeCloseTo(0.8, 2)
+    expect(found.lenses).toBeLessThan(800)
+    expect(found.lenses).toBeGreaterThan(50)
+  })
+
+  it('is worth nothing where the others tell nothing', () => {
+    const found = estimateTwoRates(
+      Array.from({ length: 100 }, (_, at) => ({ at, saysLens: at < 50, probability: 0.3 })),
+    )
+    expect(found.lenses).toBeCloseTo(0, 6)
+    expect(found.others).toBeCloseTo(0, 6)
   })
 })
 
