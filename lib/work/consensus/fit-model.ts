@@ -10,11 +10,14 @@ import type { RunGrades } from './read-grades'
 const TOLERANCE = 1e-6
 const MOST_ITERATIONS = 1000
 
+/** What is known of the share of lenses before any grade counts as this many candidates. Our choice, no source. */
+const PRIOR = { share: 0.02, candidates: 1 }
+
 /**
  * Fits the reliability of the graders, from the votes on, so that the input alone decides the result: the EM of `fitDawidSkene` an
  * iteration a turn, for the process to do other work in between (15 ms an iteration for a million grades).
  *
- * The share of lenses is kept half a candidate away from none and all: no grades make it certain that a search holds none.
+ * The share of lenses has one candidate of the prior in it, so that no grades make it certain that a search holds none.
  */
 export async function fitModel(grades: RunGrades, leftOut: readonly number[]): Promise<RunModel> {
   const { table, truth, people } = grades
@@ -42,9 +45,9 @@ export async function fitModel(grades: RunGrades, leftOut: readonly number[]): P
     lens: Array.from(rates[grader].lens),
     notLens: Array.from(rates[grader].notLens),
   }))
-  const edge = 1 / (2 * (counts.gradedCandidates + 1))
+  const lenses = counts.gradedCandidates * em.shares[LENS] + PRIOR.candidates * PRIOR.share
   return {
-    lensShare: Math.min(1 - edge, Math.max(edge, em.shares[LENS])),
+    lensShare: lenses / (counts.gradedCandidates + PRIOR.candidates),
     iterations,
     converged: change < TOLERANCE,
     logLikelihood: em.logLikelihood,

@@ -1,5 +1,7 @@
 import fc from 'fast-check'
 import { afterEach, expect, it, vi } from 'vitest'
+import { GRADES } from '@/lib/science/agreement/grades'
+import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
 import { Problem } from '@/lib/platform/problems/problem'
@@ -17,6 +19,7 @@ type Step =
   | { do: 'grade unasked'; person: number; pick: number }
   | { do: 'leave'; person: number }
   | { do: 'wait'; minutes: number }
+  | { do: 'run' }
 
 const person = fc.nat(3)
 const step: fc.Arbitrary<Step> = fc.oneof(
@@ -32,9 +35,12 @@ const step: fc.Arbitrary<Step> = fc.oneof(
 /** Steps of one inner list start at the same moment. */
 const moments = fc.array(fc.array(step, { minLength: 1, maxLength: 5 }), { minLength: 1, maxLength: 12 })
 
-async function openTable(gradesWanted: number, candidates: number) {
+/** Error rates at which one grade can settle a candidate, two that disagree leave it, and a correction unsettles it. */
+const RELIABILITY = { method: 'reliability', falseConfirmed: 0.2, missedLens: 0.25 } as const
+
+async function openTable(gradesWanted: number, candidates: number, byReliability = false) {
   vi.useFakeTimers({ toFake: ['Date'], now: new Date('2026-03-01T20:00:00Z') })
-  const scenario = await makeScenario({ gradesWanted, leastGrades: 1 })
+  const scenario = await makeScenario({ ...(byReliability ? RELIABILITY : {}), gradesWanted, leastGrades: 1 })
   const ids: number[] = []
   for (let n = 0; n < candidates; n++) ids.push(await addImagedCandidate(scenario.db, scenario.campaign, `SWS-${n}`))
   /** What each person believes to hold, which may have lapsed. */
@@ -46,6 +52,10 @@ type Table = Awaited<ReturnType<typeof openTable>>
 async function take(table: Table, step: Step): Promise<void> {
   if (step.do === 'wait') {
     vi.setSystemTime(Date.now() + step.minutes * 60_000)
+    return
+  }
+  if (step.do === 'run') {
+    await runConsensus(table.db, await table.permit(table.lead, 'lead'))
     return
   }
   const permit = await table.permit(table.graders[step.person], 'grade')
@@ -60,7 +70,7 @@ async function take(table: Table, step: Step): Promise<void> {
     if (id === undefined) return
     hand.delete(id)
     try {
-      await recordGrade(table.db, permit, id, GradeInput.parse({ grade: 'C' }))
+      await recordGrade(table.db, permit, id, GradeInput.parse({ grade: GRADES[step.pick % GRADES.length] }))
     } catch (error) {
       if (!(error instanceof Problem)) throw error
       table.refused.push(error.type)
@@ -116,7 +126,8 @@ async function gradeUntilNothingIsLeft(table: Table): Promise<void> {
       const permit = await table.permit(grader, 'grade')
       for (const { id } of (await lendNext(table.db, permit, 2)).candidates) {
         served = true
-        await recordGrade(table.db, permit, id, GradeInput.parse({ grade: 'N' }))
+        const grade = GRADES[(id + grader.id) % GRADES.length]
+        await recordGrade(table.db, permit, id, GradeInput.parse({ grade }))
       }
     }
   }
@@ -144,6 +155,46 @@ it('never goes beyond the wanted number, shows nobody a candidate twice, and ser
     ),
     { numRuns: 40 },
   )
+}, 120_000)
+
+it('serves every candidate by the reliability method until it is settled or has the most looks, and none beyond', async () => {
+  const withRuns = fc.array(
+    fc.array(fc.oneof({ weight: 8, arbitrary: step }, { weight: 1, arbitrary: fc.constant({ do: 'run' as const }) }), {
+      minLength: 1,
+      maxLength: 5,
+    }),
+    { minLength: 1, maxLength: 12 },
+  )
+  let settled = 0
+  await fc.assert(
+    fc.asyncProperty(
+      fc.integer({ min: 1, max: 4 }),
+      fc.integer({ min: 1, max: 6 }),
+      withRuns,
+      async (most, n, steps) => {
+        const table = await openTable(most, n, true)
+        await take(table, { do: 'run' })
+        for (const together of steps) {
+          await Promise.all(together.map((step) => take(table, step)))
+          await assertInvariants(table, most)
+        }
+        expect(table.refused.every((type) => type === 'candidate-full')).toBe(true)
+        // A run at the end may unsettle some, which then are served again.
+        for (const _ of [1, 2, 3]) {
+          await gradeUntilNothingIsLeft(table)
+          await take(table, { do: 'run' })
+        }
+        await gradeUntilNothingIsLeft(table)
+        await assertInvariants(table, most)
+        const rows = await table.db.selectFrom('candidate').select(['grades_given', 'settled']).execute()
+        for (const row of rows) expect(row.settled === 1 || row.grades_given === most).toBe(true)
+        settled += rows.filter((row) => row.settled === 1 && row.grades_given < most).length
+        await table.db.destroy()
+      },
+    ),
+    { numRuns: 30 },
+  )
+  expect(settled).toBeGreaterThan(0)
 }, 120_000)
 
 it('never refuses a grade that is given under a live lease', async () => {
