@@ -79,7 +79,7 @@ export function AgreementView({ report, campaignPath, fileName, leastShared, pse
               ))}
             </div>
           </Part>
-          <div className="grid gap-x-12 gap-y-8 lg:grid-cols-2">
+          <div className="grid grid-cols-[minmax(0,1fr)] gap-x-12 gap-y-8 lg:grid-cols-2">
             <Part title="Whether lens probabilities hold">
               <CalibrationPart calibration={report.calibration} fileName={fileName} />
             </Part>

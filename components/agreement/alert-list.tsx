@@ -10,7 +10,7 @@ export function AlertList({ alerts, graders }: { alerts: readonly Alert[]; grade
             {grader === null ? null : <span>{graders[grader].label}: </span>}
             {grader === null ? title : title[0].toLowerCase() + title.slice(1)}
           </p>
-          <p className="text-small">{because}</p>
+          <p className="text-small">{because.replace(/(\d) %/g, '$1\u00a0%')}</p>
           <p className="text-small text-mute">{advice}</p>
         </li>
       ))}

@@ -35,7 +35,6 @@ export function CalibrationPart({ calibration, fileName }: { calibration: Calibr
           {
             form: 'disc',
             label: 'Stamps',
-            lined: true,
             points: filled.map((bin) => ({
               x: bin.meanProbability ?? 0,
               y: bin.lensShare ?? 0,
@@ -70,11 +69,11 @@ export function CalibrationPart({ calibration, fileName }: { calibration: Calibr
         }}
       />
       <p className="max-w-3xl text-small text-mute">
-        Brier score <span className="figures text-text">{brierScore.toFixed(3)}</span>, where 0 is perfect and always
-        saying {percentOf(prior)} would score <span className="figures">{baseBrierScore.toFixed(3)}</span>; mean
-        distance from the line <span className="figures">{(expectedCalibrationError ?? 0).toFixed(3)}</span>. Numbers
-        beside points count stamps; intervals are Wilson’s at 95 %. Each of the {graded} stamps is judged by
-        reliabilities learned without its own grades, starting from the {percentOf(prior)} of lenses among the stamps.
+        Brier score <span className="text-text">{brierScore.toFixed(3)}</span>, where 0 is perfect and always saying{' '}
+        {percentOf(prior)} would score {baseBrierScore.toFixed(3)}; mean distance from the line{' '}
+        {(expectedCalibrationError ?? 0).toFixed(3)}. Numbers beside points count stamps; intervals are Wilson’s at 95
+        %. Each of the {graded} stamps is judged by reliabilities learned without its own grades, starting from the{' '}
+        {percentOf(prior)} of lenses among the stamps.
       </p>
     </div>
   )

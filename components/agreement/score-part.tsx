@@ -1,4 +1,3 @@
-import { counted } from '@/components/campaigns/in-words'
 import { XyPlot } from '@/components/plots/xy-plot'
 import type { ScoreReport } from '@/lib/work/reports/report-types'
 import { percentOf } from './words'
@@ -58,10 +57,10 @@ export function ScorePart({ score, fileName }: { score: ScoreReport | null; file
         }}
       />
       <p className="max-w-3xl text-small text-mute">
-        Area <span className="figures text-text">{areaInWords}</span>: the probability that a confirmed candidate has a
-        higher score than one set aside; the interval is Hanley and McNeil’s at 95 %. Over{' '}
-        {counted(confirmed, 'confirmed').replace('confirmeds', 'confirmed')} and {setAside.toLocaleString('en')}{' '}
-        set-aside candidates as they stand now, rulings included; {undecided.toLocaleString('en')} undecided
+        Area <span className="text-text">{areaInWords}</span>: the probability that a confirmed candidate has a higher
+        score than one set aside; the interval is Hanley and McNeil’s at 95 %. Over {confirmed.toLocaleString('en')}{' '}
+        confirmed and {setAside.toLocaleString('en')} set-aside candidates as they stand now, rulings included;{' '}
+        {undecided.toLocaleString('en')} undecided
         {withoutScore ? ` and ${withoutScore.toLocaleString('en')} without a score` : ''} are left out. A verdict is a
         visual judgement, so this says how far machine and eyes agree, not how right either is.
       </p>

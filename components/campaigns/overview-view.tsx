@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react'
 import { ButtonLink } from '@/components/ui/button'
 import { EmptyState, Notice, VisualGradeCaution } from '@/components/ui/notice'
 import type { CampaignOverview } from '@/lib/work/campaigns/campaign-overview'
@@ -14,6 +15,8 @@ interface Props {
   about: string
   campaignPath: string
   stamps: TrayStamp[]
+  /** what the Agreement page has to say; comes later than the rest */
+  agreementLine?: ReactNode
 }
 
 function headline({ outcome, candidates }: CampaignOverview): string {
@@ -24,7 +27,7 @@ function headline({ outcome, candidates }: CampaignOverview): string {
   return `${counted(candidates, 'candidate')}: ${confirmed.toLocaleString('en')} confirmed${rest}`
 }
 
-function Outcome({ overview, campaignPath, stamps }: Props) {
+function Outcome({ overview, campaignPath, stamps, agreementLine }: Props) {
   const { outcome } = overview
   if (!outcome) return null
   const { split, open } = outcome.counts
@@ -44,6 +47,7 @@ function Outcome({ overview, campaignPath, stamps }: Props) {
             {counted(overview.rule.leastGrades, 'grade')}.
           </p>
         )}
+        {outcome.run ? agreementLine : null}
       </Part>
       {stamps.length ? (
         <Part title="Confirmed last">

@@ -99,7 +99,7 @@ export function BarPlot({
       ),
     }
   }
-  return <PlotFrame {...frame} tools={tools} draw={draw} hint="Arrow keys move from bar to bar." />
+  return <PlotFrame {...frame} tools={tools} draw={draw} what="bar" />
 }
 
 function legendPlaces(parts: readonly { label: string }[], width: number) {

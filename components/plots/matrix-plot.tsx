@@ -95,7 +95,7 @@ export function MatrixPlot({
               <PlotMark key={`${row}-${column}`} at={at} reading={reading}>
                 <rect {...place} fill="var(--page)" stroke="var(--line)" />
                 {value !== null && !faint ? (
-                  <rect {...place} fill="var(--grade-a)" fillOpacity={0.04 + 0.36 * Math.min(1, Math.max(0, value))} />
+                  <rect {...place} fill="var(--grade-a)" fillOpacity={0.05 + 0.4 * Math.min(1, Math.max(0, value))} />
                 ) : null}
                 {faint ? <rect {...place} fill="url(#plot-faint)" /> : null}
                 <text
@@ -114,5 +114,5 @@ export function MatrixPlot({
       ),
     }
   }
-  return <PlotFrame {...frame} draw={draw} hint="Arrow keys move from pair to pair." />
+  return <PlotFrame {...frame} draw={draw} what="pair" />
 }

@@ -27,7 +27,7 @@ export function PlotFrame({
   fileName,
   table,
   draw,
-  hint = 'Arrow keys move from point to point.',
+  what = 'point',
   tools,
 }: {
   title: string
@@ -36,7 +36,8 @@ export function PlotFrame({
   fileName: string
   table: PlotTable
   draw: (width: number) => Drawing
-  hint?: string
+  /** what one comes to with the arrow keys */
+  what?: string
   tools?: ReactNode
 }) {
   const id = useId()
@@ -133,7 +134,14 @@ export function PlotFrame({
               </svg>
             </div>
             <p aria-hidden="true" className="min-h-[2.4rem] text-note text-mute sm:min-h-[1.2rem]">
-              {reading ? <span className="text-text">{reading}</span> : hint}
+              {reading ? (
+                <span className="text-text">{reading}</span>
+              ) : (
+                <>
+                  <span className="pointer-coarse:hidden">{`Arrow keys move from ${what} to ${what}.`}</span>
+                  <span className="hidden pointer-coarse:inline">{`Tap a ${what} to read it.`}</span>
+                </>
+              )}
             </p>
           </MarkFocusContext>
         )}

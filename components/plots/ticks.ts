@@ -1,12 +1,17 @@
-/** Steps that people count in: 1, 2 and 5 times a power of ten. */
-const STEPS = [1, 2, 5, 10]
+/** Steps that people count in, and where on a logarithmic scale one is nearer than the next. */
+const STEPS = [
+  { step: 1, below: Math.sqrt(2) },
+  { step: 2, below: Math.sqrt(10) },
+  { step: 5, below: Math.sqrt(50) },
+  { step: 10, below: Infinity },
+]
 
-/** Step of about `about` ticks over the span; 1 for a span of nothing. */
+/** Step of about `about` ticks over the span: 1, 2 or 5 times a power of ten; 1 for a span of nothing. */
 export function tickStep(span: number, about: number): number {
   if (!(span > 0) || about < 1) return 1
   const rough = span / about
   const power = 10 ** Math.floor(Math.log10(rough))
-  return power * (STEPS.find((step) => step * power >= rough * (1 - 1e-9)) ?? 10)
+  return power * (STEPS.find(({ below }) => rough / power < below)?.step ?? 10)
 }
 
 /**

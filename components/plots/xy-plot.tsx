@@ -68,6 +68,8 @@ export function XyPlot({
     box.bottom = square ? top + (box.right - box.left) * 0.9 : top + height - 90
     const x = linearScale(xDomain, [box.left, box.right])
     const y = linearScale(yDomain, [box.bottom, box.top])
+    // Points of two series at one place stand beside each other, so that no whisker hides another.
+    const apart = (index: number) => (series.length > 1 ? (index * 2 - 1) * 2.5 : 0)
     let mark = 0
     return {
       width: width < available ? width : undefined,
@@ -89,11 +91,18 @@ export function XyPlot({
           <YAxis box={box} scale={y} domain={yDomain} label={yLabel} />
           <XAxis box={box} scale={x} domain={xDomain} label={xLabel} />
           {diagonal ? <Diagonal box={box} words={diagonal} /> : null}
-          {series.map((one) => (
+          {series.map((one, index) => (
             <g key={one.label}>
-              <Line series={one} x={x} y={y} />
+              <Line series={one} x={(value) => x(value) + apart(index)} y={y} />
               {one.points.map((point) => (
-                <Point key={`${point.x} ${point.y}`} at={mark++} form={one.form} point={point} x={x} y={y} />
+                <Point
+                  key={`${point.x} ${point.y}`}
+                  at={mark++}
+                  form={one.form}
+                  point={point}
+                  x={(value) => x(value) + apart(index)}
+                  y={y}
+                />
               ))}
             </g>
           ))}
@@ -164,7 +173,7 @@ function Point({
       ) : null}
       <SeriesSymbol form={form} x={x(point.x)} y={y(point.y)} />
       {point.text ? (
-        <text x={x(point.x) + 8} y={y(point.y) + 14} fontSize="11" fill="var(--mute)">
+        <text x={x(point.x) + 9} y={y(point.y) + (point.y < 0.1 ? -6 : 14)} fontSize="11" fill="var(--mute)">
           {point.text}
         </text>
       ) : null}

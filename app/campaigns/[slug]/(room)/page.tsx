@@ -1,7 +1,10 @@
+import { Suspense } from 'react'
 import { permitPage } from '@/app/_lib/page-permit'
+import { AgreementLine } from '@/components/agreement/agreement-line'
 import { GraderOverview, LeadOverview, ViewerOverview } from '@/components/campaigns/overview-view'
 import { fromJson } from '@/db/schema/values'
 import { campaignOverview } from '@/lib/work/campaigns/campaign-overview'
+import { agreementReport } from '@/lib/work/reports/agreement-report'
 import { picturesOf } from '@/lib/work/stamps/candidate-pictures'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]'>) {
@@ -40,6 +43,19 @@ export default async function OverviewPage({ params }: PageProps<'/campaigns/[sl
       about={`${campaign.survey} (${campaign.acronym}), bands ${bands}`}
       campaignPath={`/campaigns/${slug}`}
       stamps={stamps}
+      agreementLine={
+        <Suspense fallback={null}>
+          <AgreementAlerts slug={slug} />
+        </Suspense>
+      }
     />
   )
+}
+
+/** Counted while the page is there already: the report of a large campaign takes seconds. */
+async function AgreementAlerts({ slug }: { slug: string }) {
+  const { db, permit } = await permitPage(slug, 'read')
+  if (permit.role === 'grader') return null
+  const { alerts } = await agreementReport(db, permit)
+  return <AgreementLine alerts={alerts.length} campaignPath={`/campaigns/${slug}`} />
 }
