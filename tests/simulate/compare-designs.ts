@@ -37,7 +37,7 @@ export interface DesignComparison {
 }
 
 export interface CompareOptions {
-  /** passes through the product at most; the one with the fewest looks among those that match is reported */
+  /** passes through the product at most; the first whose catalogue matches is reported, and none after it is made */
   passes: number
   leastGrades: number
   onPass?: (pass: number, played: PlayedSearch, isMatched: boolean) => void
@@ -73,8 +73,8 @@ export async function compareDesigns(scenario: SearchScenario, options: CompareO
     )
     const isMatched = isAsGood(product, wanted)
     options.onPass?.(passes, product, isMatched)
-    const isFewer = best !== null && product.looksPerCandidate < best.product.looksPerCandidate
-    if (!best || (isMatched && (isFewer || !best.isMatched))) best = { product, rule, isMatched }
+    best = { product, rule, isMatched }
+    if (isMatched) break
     goal = {
       completeness: moveGoal(goal.completeness, wanted.completeness, product.completeness),
       purity: moveGoal(goal.purity, wanted.purity, product.purity ?? 0),

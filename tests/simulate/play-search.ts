@@ -13,7 +13,7 @@ import { lendNext } from '@/lib/work/queue/lend-next'
 import { openSearch, type SearchSite } from './survey-of-search'
 
 /** Candidates that a grader asks for and grades in a row. */
-const SITTING = 10
+const SITTING = 20
 /** The consensus runs when the looks have grown by this share since its last run, and when the queue is empty. */
 const RUN_SHARE = 0.1
 const FIRST_RUN = 200
