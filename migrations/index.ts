@@ -6,6 +6,7 @@ import * as invitationMail from './005-invitation-mail'
 import * as looksAsked from './006-looks-asked'
 import * as reliability from './007-reliability'
 import * as jobHolder from './008-job-holder'
+import * as gradingRoom from './009-grading-room'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -16,4 +17,5 @@ export const migrations: Record<string, Migration> = {
   '006-looks-asked': looksAsked,
   '007-reliability': reliability,
   '008-job-holder': jobHolder,
+  '009-grading-room': gradingRoom,
 }

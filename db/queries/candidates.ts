@@ -2,6 +2,7 @@ import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { Campaign } from '../schema/campaigns'
 import type { Candidate } from '../schema/intake'
+import { among, inCampaign } from './by-ids'
 
 /** For jobs, which carry a campaign's id. */
 export async function requireCampaign(db: Kysely<DB>, id: number): Promise<Campaign> {
@@ -17,6 +18,20 @@ export async function findCandidate(db: Kysely<DB>, campaignId: number, id: numb
     .where('campaign_id', '=', campaignId)
     .executeTakeFirst()
   return candidate ?? null
+}
+
+export async function listCandidateNames(
+  db: Kysely<DB>,
+  campaignId: number,
+  ids: readonly number[],
+): Promise<Map<number, string>> {
+  const rows = await db
+    .selectFrom('candidate')
+    .select(['id', 'name'])
+    .where(inCampaign('campaign_id', campaignId))
+    .where('id', 'in', among(ids))
+    .execute()
+  return new Map(rows.map(({ id, name }) => [id, name]))
 }
 
 /** The files whose planes the candidate has, each with its bands, by name. */

@@ -1,4 +1,4 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { Estimate, Ruling, RulingOutcome, RunModel, StateChange } from '../schema/consensus'
 import type { CandidateState } from '../schema/intake'
@@ -102,33 +102,78 @@ export interface SplitRow {
   name: string
   mean: number | null
   spread: number | null
+  /** of a lens, by the live estimate; null by the mean */
+  probability: number | null
   grades: number | null
   since: IsoTime
+  lastRulingId: number | null
+}
+
+export interface SplitOrdering {
+  by: 'worth' | 'mean' | 'spread' | 'waiting' | 'name'
+  /** Thresholds by which worth is reckoned under the mean method; null: by the probability of a lens. */
+  thresholds: { confirmMean: number; setAsideMean: number } | null
 }
 
 /**
- * A campaign's splits, those most likely to be lenses first: by mean, highest first, then by spread, widest first. Splits
- * without a grade come last.
+ * A campaign's splits. By worth: those whose probability of a lens is nearest to a half first, which have the most entropy; by the
+ * mean method those whose mean lies deepest between the thresholds, then the widest spread. Without a grade they come last.
  */
-export async function listSplits(db: Kysely<DB>, campaignId: number, limit: number): Promise<SplitRow[]> {
-  return db
+export async function listSplits(
+  db: Kysely<DB>,
+  campaignId: number,
+  { by, thresholds }: SplitOrdering,
+  limit: number,
+): Promise<SplitRow[]> {
+  const splits = db
     .selectFrom('candidate')
     .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
+    .leftJoin('estimate', 'estimate.candidate_id', 'candidate.id')
     .select([
       'candidate.id',
       'candidate.name',
       'candidate.state_since as since',
+      'candidate.ruling_id as lastRulingId',
       'verdict.mean',
       'verdict.spread',
       'verdict.grades',
     ])
+    .select(
+      sql<number | null>`${thresholds ? null : sql`coalesce(estimate.probability, verdict.probability)`}`.as(
+        'probability',
+      ),
+    )
     .where('candidate.campaign_id', '=', campaignId)
     .where('candidate.state', '=', 'split')
-    .orderBy('verdict.mean', (order) => order.desc().nullsLast())
-    .orderBy('verdict.spread', 'desc')
-    .orderBy('candidate.id')
     .limit(limit)
-    .execute()
+  switch (by) {
+    case 'worth':
+      return splits
+        .orderBy(
+          thresholds
+            ? sql`min(verdict.mean - ${thresholds.setAsideMean}, ${thresholds.confirmMean} - verdict.mean)`
+            : sql`-abs(coalesce(estimate.probability, verdict.probability) - 0.5)`,
+          (order) => order.desc().nullsLast(),
+        )
+        .orderBy('verdict.spread', 'desc')
+        .orderBy('candidate.id')
+        .execute()
+    case 'mean':
+      return splits
+        .orderBy('verdict.mean', (order) => order.desc().nullsLast())
+        .orderBy('verdict.spread', 'desc')
+        .orderBy('candidate.id')
+        .execute()
+    case 'spread':
+      return splits
+        .orderBy('verdict.spread', (order) => order.desc().nullsLast())
+        .orderBy('candidate.id')
+        .execute()
+    case 'waiting':
+      return splits.orderBy('candidate.state_since').orderBy('candidate.id').execute()
+    case 'name':
+      return splits.orderBy('candidate.name').orderBy('candidate.id').execute()
+  }
 }
 
 export interface RecentRuling {

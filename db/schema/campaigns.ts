@@ -15,6 +15,14 @@ export interface CampaignTable {
   /** km/s/Mpc */
   hubble_constant: Generated<number>
   omega_matter: Generated<number>
+  /** What the mean method's queue goes by. */
+  queue_order: Generated<'most needed' | 'score' | 'shuffled'>
+  /** Shares of a person's looks that are calibration stamps, and own candidates that come back turned. */
+  calibration_share: Generated<number>
+  repeat_share: Generated<number>
+  /** Practice stamps asked of a grader before the first candidate. */
+  practice_wanted: Generated<number>
+  uses_sheet: Generated<0 | 1>
   created_by: number
   created_at: IsoTime
 }

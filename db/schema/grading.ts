@@ -41,3 +41,38 @@ export interface JudgementShownTable {
   person_id: number
   at: IsoTime
 }
+
+/** A mark of the first pass. The newest of a candidate holds; 'taken back' undoes the one before. */
+export interface SheetMarkTable {
+  id: Generated<number>
+  uid: string
+  campaign_id: number
+  candidate_id: number
+  person_id: number
+  mark: 'sent on' | 'dropped' | 'taken back'
+  at: IsoTime
+}
+
+/** What a person answered in practice; never counted in any consensus or reliability. */
+export interface PracticeAnswerTable {
+  id: Generated<number>
+  uid: string
+  campaign_id: number
+  candidate_id: number
+  person_id: number
+  grade: GradeLetter
+  seconds: number | null
+  given_at: IsoTime
+}
+
+/** A candidate that comes back to the person who graded it; answered by a grade of the occasion 'repeat'. */
+export interface RepeatLookTable {
+  id: Generated<number>
+  campaign_id: number
+  candidate_id: number
+  person_id: number
+  /** Quarter turns 0 to 3, mirrored first from 4 on. */
+  turned: number
+  lent_at: IsoTime
+  grade_id: number | null
+}

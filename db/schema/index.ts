@@ -2,7 +2,14 @@ import type { CampaignTable, MembershipTable, RecipeTable, RuleTable } from './c
 import type { DesignationTable, EntryTable } from './catalogue'
 import type { EstimateTable, LeftOutTable, RulingTable, RunTable, StateChangeTable, VerdictTable } from './consensus'
 import type { AskedLookTable, MentionTable, MessageTable } from './discussion'
-import type { GradeTable, JudgementShownTable, LeaseTable } from './grading'
+import type {
+  GradeTable,
+  JudgementShownTable,
+  LeaseTable,
+  PracticeAnswerTable,
+  RepeatLookTable,
+  SheetMarkTable,
+} from './grading'
 import type {
   BatchTable,
   CandidateTable,
@@ -34,6 +41,9 @@ export interface DB {
   lease: LeaseTable
   grade: GradeTable
   judgement_shown: JudgementShownTable
+  sheet_mark: SheetMarkTable
+  practice_answer: PracticeAnswerTable
+  repeat_look: RepeatLookTable
   run: RunTable
   verdict: VerdictTable
   estimate: EstimateTable

@@ -85,6 +85,13 @@ export interface CandidateTable {
   source_redshift: number | null
   /** Set on calibration stamps only; never leaves the server before the grade is given. */
   truth: 'lens' | 'not a lens' | null
+  /** Of a painted calibration stamp: the candidate whose cutouts it was painted over, and what was painted. */
+  painted_over: Generated<number | null>
+  painting: Generated<Json<unknown> | null>
+  /** Of a calibration stamp: what practice says of it after the answer. */
+  explanation: Generated<string | null>
+  /** Where it is in the first pass over the sheet; counts only in campaigns that use it. */
+  first_pass: Generated<'waiting' | 'sent on' | 'dropped'>
   imaged_at: IsoTime | null
   /** Standing first grades, 'cannot judge' included. */
   grades_given: Generated<number>
