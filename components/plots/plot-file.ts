@@ -38,7 +38,6 @@ export function svgFile(svg: SVGSVGElement, title: string, valueOf: (variable: s
       if (value.includes('var(')) element.setAttribute(name, resolve(value, valueOf))
     }
   }
-  copy.setAttribute('xmlns', NAMESPACE)
   copy.setAttribute('viewBox', `0 ${-TITLE_HEIGHT} ${width} ${height + TITLE_HEIGHT}`)
   copy.setAttribute('width', String(width))
   copy.setAttribute('height', String(height + TITLE_HEIGHT))
