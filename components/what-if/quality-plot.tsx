@@ -77,6 +77,11 @@ export function QualityPlot({
     const point = pointAt(promised, threshold)
     return point && point.completeness >= from.x && point.purity >= from.y ? [{ ...point, text }] : []
   })
+  // A label that would lie on another is left out; the table has it.
+  const written = marks.filter((mark, at) => {
+    const before = marks[at - 1]
+    return !before || Math.hypot(x(mark.completeness) - x(before.completeness), y(mark.purity) - y(before.purity)) > 50
+  })
   const words = (name: string, { completeness, purity }: Place) =>
     `${name}: completeness ${share(completeness)}, purity ${share(purity)}.`
   return (
@@ -152,12 +157,12 @@ export function QualityPlot({
         </g>
         <g className="fill-mute" fontSize="11">
           {marks.map(({ completeness, purity, text }) => (
-            <g key={text}>
-              <circle cx={x(completeness)} cy={y(purity)} r="2" className="fill-text" />
-              <text x={x(completeness) - 7} y={y(purity) + 13} textAnchor="end">
-                {text}
-              </text>
-            </g>
+            <circle key={text} cx={x(completeness)} cy={y(purity)} r="2" className="fill-text" />
+          ))}
+          {written.map(({ completeness, purity, text }) => (
+            <text key={text} x={x(completeness) - 7} y={y(purity) + 13} textAnchor="end">
+              {text}
+            </text>
           ))}
         </g>
       </svg>

@@ -40,7 +40,9 @@ export function StateCounts({ trial }: { trial: RuleTrial }) {
               </dt>
               <dd className="flex flex-wrap items-baseline gap-x-2">
                 <span className="figures text-title font-semibold">{trial.then[state].toLocaleString('en')}</span>
-                <span className={`figures whitespace-nowrap text-note ${change === 0 ? 'text-mute' : 'text-lamp'}`}>
+                <span
+                  className={`whitespace-nowrap text-note ${change === 0 ? 'text-mute' : 'figures font-semibold text-lamp'}`}
+                >
                   {signed(change)}
                 </span>
                 <span className="whitespace-nowrap text-note text-mute max-md:hidden">
