@@ -1,172 +1,177 @@
-// Imaging, from bytes on disk to committed rows and stored stamps, beside the script an astronomer would write and beside the
-// floor: the same pictures through sharp's PNG encoder alone. The three run in turn, so that a noisy minute hits them all.
-import { mkdtemp, readdir, readFile, rm, writeFile } from 'node:fs/promises'
+// Imaging, from bytes on disk to committed rows and stored stamps, beside the script an astronomer would write and beside two
+// floors: the same pictures through the encoder alone. All run in turn, so that a noisy minute hits them all.
+import { spawn } from 'node:child_process'
+import { mkdir, mkdtemp, readdir, readFile, rm, symlink } from 'node:fs/promises'
 import { availableParallelism, tmpdir } from 'node:os'
 import path from 'node:path'
-import type { Kysely } from 'kysely'
 import sharp from 'sharp'
-import { openDatabase } from '@/db/connection'
-import { migrateToLatest } from '@/db/migrator'
-import { insertRecipe } from '@/db/queries/campaigns'
-import { insertPerson } from '@/db/queries/people'
-import type { DB } from '@/db/schema'
-import { BlobStore } from '@/lib/platform/storage/blob-store'
-import { canonicalRecipe, defaultRecipe } from '@/lib/science/imaging/recipe'
-import { simulateCandidate, SIMULATED_KINDS } from '@/lib/science/lensing/simulate-candidate'
-import { demoFiles } from '@/fixtures/demo/demo-candidates'
-import { CampaignInput } from '@/lib/work/campaigns/campaign-input'
-import { createCampaign } from '@/lib/work/campaigns/create-campaign'
-import { RuleInput } from '@/lib/work/campaigns/rule-input'
-import { permitCampaign } from '@/lib/work/people/permission'
-import type { ImagingTools } from '@/lib/work/stamps/campaign-work'
-import { deliverFolder, readDelivered } from '@/lib/work/stamps/deliver-folder'
-import { imagePool, workerCount } from '@/lib/work/stamps/image-pool'
-import { askPeer } from './_peer'
+import { workerCount } from '@/lib/work/stamps/image-pool'
+import { imageFolder, median, SAME_FOUR, verdict, writeCutouts, type Run } from './_imaging-run'
+import { floorOfOwnEncoder, floorOfSharp, type Picture } from './_encoder-floors'
+import { timeOfViews } from './_view-times'
 
 const CANDIDATES = 240
 const ROUNDS = 3
+/** The aims: so many times the script for its four pictures, and so many times the encoder's floor at most. */
+const AIM_PEER = 4
+const AIM_FLOOR = 1.5
 
-async function writeCutouts(folder: string): Promise<void> {
-  for (let index = 0; index < CANDIDATES; index++) {
-    const simulated = simulateCandidate(SIMULATED_KINDS[index % SIMULATED_KINDS.length], 1000 + index)
-    const name = `BENCH${String(index).padStart(4, '0')}`
-    const position = { raDeg: 10 + index / 100, decDeg: 1 }
-    for (const file of demoFiles({ name, ...position, score: 0.9, simulated })) {
-      await writeFile(path.join(folder, file.name), file.bytes)
-    }
-  }
-}
-
-interface Installation {
-  db: Kysely<DB>
-  tools: ImagingTools
-  campaignId: number
-}
-
-/** The pictures that the peer makes, or all that a new campaign makes. */
-type Pictures = 'the same four pictures' | 'all views'
-const SAME_FOUR = ['colour', 'band:g', 'band:r', 'band:i']
-
-/** A new installation that has taken the files in and read none. */
-async function deliver(cutouts: string, folder: string, pictures: Pictures): Promise<Installation> {
-  const db = openDatabase(path.join(folder, 'ringside.sqlite'))
-  await migrateToLatest(db)
-  const blobs = new BlobStore(path.join(folder, 'blobs'), path.join(folder, 'incoming'))
-  const now = '2026-01-01T00:00:00.000Z'
-  const email = 'avocet@saltmarsh.test'
-  const id = await insertPerson(db, { email, name: 'avocet', passwordHash: null, isAdmin: true, now })
-  const viewer = { id, name: 'avocet', email, isAdmin: true }
-  const input = { name: 'Bench', survey: 'Saltmarsh Wide Survey', acronym: 'SWS', bands: 'g r i' }
-  const campaign = await createCampaign(db, viewer, CampaignInput.parse(input), RuleInput.parse({}))
-  const permit = await permitCampaign(db, viewer, campaign.slug, 'lead')
-  if (pictures === 'the same four pictures') {
-    const parameters = canonicalRecipe({ ...defaultRecipe(['g', 'r', 'i']), views: SAME_FOUR })
-    await insertRecipe(db, { campaignId: campaign.id, version: 2, parameters, hash: 'bench', createdBy: id, now })
-  }
-  await deliverFolder(db, permit, blobs, cutouts)
-  const stampFolder = path.join(folder, 'stamps')
-  const tools = { db, blobs, stampFolder, runner: imagePool, workers: workerCount(), quietMs: 0 }
-  return { db, tools, campaignId: campaign.id }
-}
-
-async function seconds(work: () => Promise<unknown>): Promise<number> {
-  const started = performance.now()
-  await work()
-  return (performance.now() - started) / 1000
-}
-
-/** Pixels of every stamp, for the floor. */
-async function decodeStamps(folder: string) {
+/** Pixels of every stamp, for the floors. */
+async function decodeStamps(folder: string): Promise<Picture[]> {
   const names = (await readdir(folder, { recursive: true, withFileTypes: true })).filter((entry) => entry.isFile())
-  return Promise.all(
-    names.map(async (entry) => {
-      const bytes = await readFile(path.join(entry.parentPath, entry.name))
-      const { channels = 1 } = await sharp(bytes).metadata()
-      const image = channels === 1 ? sharp(bytes).toColourspace('b-w') : sharp(bytes)
-      return image.raw().toBuffer({ resolveWithObject: true })
-    }),
-  )
-}
-
-/** The same encoder settings as lib/work/stamps/draw-stamps.ts, in sharp's own threads, storing nothing. */
-async function encodeAll(pictures: Awaited<ReturnType<typeof decodeStamps>>): Promise<void> {
-  const lanes = 2 * availableParallelism()
-  let next = 0
-  const lane = async () => {
-    for (let picture = pictures[next++]; picture; picture = pictures[next++]) {
-      const { width, height, channels } = picture.info
-      const image = sharp(picture.data, { raw: { width, height, channels } })
-      const grey = channels === 1 ? image.toColourspace('b-w') : image
-      await grey.png({ compressionLevel: 2, adaptiveFiltering: false }).toBuffer()
-    }
+  const pictures: Picture[] = []
+  for (const entry of names) {
+    const bytes = await readFile(path.join(entry.parentPath, entry.name))
+    const { channels: stored = 1 } = await sharp(bytes).metadata()
+    const image = stored === 1 ? sharp(bytes).toColourspace('b-w') : sharp(bytes)
+    const { data, info } = await image.raw().toBuffer({ resolveWithObject: true })
+    const { width, height } = info
+    pictures.push({ pixels: data, width, height, channels: info.channels === 1 ? 1 : 3 })
   }
-  await Promise.all(Array.from({ length: lanes }, lane))
+  return pictures
 }
-
-const median = (values: number[]) => values.toSorted((a, b) => a - b)[Math.floor(values.length / 2)]
 
 interface Rates {
-  ours: number[]
-  floors: number[]
-  views: number
+  runs: Run[]
+  own: number[]
+  sharp: number[]
 }
 
-async function round(cutouts: string, pictures: Pictures, rates: Rates | null): Promise<void> {
-  const folder = await mkdtemp(path.join(tmpdir(), 'ringside-bench-'))
-  const { db, tools, campaignId } = await deliver(cutouts, folder, pictures)
-  const own = await seconds(() => readDelivered(tools, campaignId))
-  const { stamps } = await db
-    .selectFrom('stamp')
-    .select((e) => e.fn.countAll<number>().as('stamps'))
-    .executeTakeFirstOrThrow()
-  if (stamps < CANDIDATES * 4) throw new Error(`Only ${stamps} stamps were made`)
-  const decoded = await decodeStamps(tools.stampFolder)
-  const floor = await seconds(() => encodeAll(decoded))
-  await db.destroy()
-  await rm(folder, { recursive: true, force: true })
+async function round(cutouts: string, views: string[] | null, rates: Rates | null): Promise<void> {
+  let pictures: Picture[] = []
+  const run = await imageFolder(cutouts, views, async (folder) => {
+    pictures = await decodeStamps(folder)
+  })
+  if (run.stamps < CANDIDATES * SAME_FOUR.length) throw new Error(`Only ${run.stamps} stamps were made`)
+  const own = await floorOfOwnEncoder(pictures)
+  const bySharp = await floorOfSharp(pictures)
   if (!rates) return
-  rates.ours.push(CANDIDATES / own)
-  rates.floors.push(CANDIDATES / floor)
-  rates.views = stamps / CANDIDATES
+  rates.runs.push(run)
+  rates.own.push(CANDIDATES / own)
+  rates.sharp.push(CANDIDATES / bySharp)
+}
+
+interface PeerRate {
+  rate: number
+  /** Milliseconds of processor time a candidate, imports left out. */
+  processor: number
+}
+
+/** Runs the script as it is, and then prints what processor time it took since its imports. */
+const MEASURED = `
+import resource, runpy, sys
+import numpy, astropy.io.fits, astropy.visualization, PIL.Image
+spent = lambda: sum(resource.getrusage(resource.RUSAGE_SELF)[:2])
+before = spent()
+sys.argv = sys.argv[1:]
+runpy.run_path(sys.argv[0], run_name='__main__')
+print(f'{spent() - before:.4f} processor seconds')
+`
+
+/** The script in so many processes at once, each with its share of the candidates, or why it could not be asked. */
+async function runPeers(cutouts: string, processes: number): Promise<PeerRate | string> {
+  const script = path.join(process.env.RINGSIDE_PEERS ?? '', 'imaging.py')
+  const names = [...new Set((await readdir(cutouts)).map((name) => name.replace(/_[gri]\.fits$/, '')))].sort()
+  const folders = await Promise.all(
+    Array.from({ length: processes }, async (_, share) => {
+      const folder = await mkdtemp(path.join(tmpdir(), 'ringside-peer-'))
+      await mkdir(path.join(folder, 'in'))
+      for (const name of names.filter((_name, k) => k % processes === share)) {
+        for (const band of 'gri')
+          await symlink(path.join(cutouts, `${name}_${band}.fits`), path.join(folder, 'in', `${name}_${band}.fits`))
+      }
+      return folder
+    }),
+  )
+  try {
+    const printed = await Promise.all(
+      folders.map((folder) => runPython(['-c', MEASURED, script, path.join(folder, 'in'), path.join(folder, 'out')])),
+    )
+    const failed = printed.find((text) => !/processor seconds/.test(text))
+    if (failed !== undefined) return failed.split('\n').at(-1) ?? 'imaging.py printed nothing'
+    const sum = (pattern: RegExp) => printed.reduce((total, text) => total + Number(pattern.exec(text)?.[1]), 0)
+    // Each says its own rate; side by side they add up.
+    return { rate: sum(/([\d.]+) candidates\/s/), processor: (1000 * sum(/([\d.]+) processor/)) / names.length }
+  } finally {
+    for (const folder of folders) await rm(folder, { recursive: true, force: true })
+  }
+}
+
+function runPython(argv: string[]): Promise<string> {
+  return new Promise((resolve) => {
+    const child = spawn(process.env.RINGSIDE_PYTHON ?? '/usr/bin/python3', argv)
+    let text = ''
+    child.stdout.on('data', (bytes: Buffer) => (text += bytes.toString()))
+    child.stderr.on('data', (bytes: Buffer) => (text += bytes.toString()))
+    child.on('error', (error) => resolve(`skipped beside imaging.py: ${error.message}`))
+    child.on('close', () => resolve(text.trim()))
+  })
 }
 
 export async function benchImaging(): Promise<string[]> {
   const cutouts = await mkdtemp(path.join(tmpdir(), 'ringside-bench-'))
-  const results: Record<Pictures, Rates> = {
-    'the same four pictures': { ours: [], floors: [], views: 0 },
-    'all views': { ours: [], floors: [], views: 0 },
-  }
-  const kinds = Object.keys(results) as Pictures[]
-  const peers: number[] = []
-  let note = ''
+  const four: Rates = { runs: [], own: [], sharp: [] }
+  const all: Rates = { runs: [], own: [], sharp: [] }
+  const alone: (PeerRate | string)[] = []
+  const beside: (PeerRate | string)[] = []
+  const cores = availableParallelism()
   try {
-    await writeCutouts(cutouts)
-    // The first round warms up the workers and the disk's cache.
-    await round(cutouts, 'all views', null)
+    await writeCutouts(cutouts, CANDIDATES)
+    // The first rounds warm up the workers and the disk's cache.
+    await round(cutouts, null, null)
+    await round(cutouts, SAME_FOUR, null)
     for (let count = 0; count < ROUNDS; count++) {
-      for (const pictures of kinds) await round(cutouts, pictures, results[pictures])
-      const peer = askPeer('imaging.py', cutouts, path.join(cutouts, '..', `${path.basename(cutouts)}-peer`))
-      if ('answer' in peer) peers.push(Number(/([\d.]+) candidates\/s/.exec(peer.answer)?.[1]))
-      else note = peer.skipped
+      await round(cutouts, SAME_FOUR, four)
+      alone.push(await runPeers(cutouts, 1))
+      await round(cutouts, null, all)
+      beside.push(await runPeers(cutouts, cores))
     }
   } finally {
     await rm(cutouts, { recursive: true, force: true })
-    await rm(`${cutouts}-peer`, { recursive: true, force: true })
   }
-  const head = `imaging, ${CANDIDATES} candidates of 3 bands, 80 by 80 pixels, ${workerCount()} workers, median of ${ROUNDS} rounds, bytes on disk to committed rows and stored stamps`
-  const lines = kinds.map((pictures) => {
-    const { ours, floors, views } = results[pictures]
-    const [own, floor] = [median(ours), median(floors)]
-    return `  ${pictures} (${views}): ${own.toFixed(0)} candidates/s; sharp's PNG encoder alone ${floor.toFixed(0)}, so ${(floor / own).toFixed(2)} times the floor`
-  })
-  const ratios = kinds.map(
-    (pictures) => `${(median(results[pictures].ours) / median(peers)).toFixed(1)} for ${pictures}`,
-  )
   return [
-    head,
-    ...lines,
-    peers.length
-      ? `  imaging.py (4 pictures): ${median(peers).toFixed(0)} candidates/s; Ringside is times as fast: ${ratios.join(', ')}`
-      : `  ${note}`,
+    `imaging, ${CANDIDATES} candidates of 3 bands, 80 by 80 pixels, ${workerCount()} workers on ${cores} processors, median of ${ROUNDS} rounds`,
+    '  bytes on disk to committed rows and stored stamps; the script reads the same files and writes the same four pictures, 80 by 80, as PNG',
+    ...linesOf('the same four pictures', four),
+    ...linesOf('all views', all),
+    ...peerLines(four, alone, beside, cores),
+    ...timeOfViews(),
+  ]
+}
+
+const rateOf = ({ runs }: Rates): number => CANDIDATES / median(runs.map(({ seconds }) => seconds))
+
+const processorOf = ({ runs }: Rates): number =>
+  median(runs.map(({ processorSeconds }) => (1000 * processorSeconds) / CANDIDATES))
+
+function linesOf(name: string, rates: Rates): string[] {
+  const rate = rateOf(rates)
+  const processor = processorOf(rates)
+  const [own, bySharp] = [median(rates.own), median(rates.sharp)]
+  const views = rates.runs[0].stamps / CANDIDATES
+  const against = (floor: number) =>
+    `${floor.toFixed(0)} (${(floor / rate).toFixed(2)} times; aim ${AIM_FLOOR}: ${verdict(floor <= AIM_FLOOR * rate)})`
+  return [
+    `  ${name} (${views}): ${rate.toFixed(0)} candidates/s, ${processor.toFixed(2)} ms of processor time each`,
+    `    floor, encoding alone on the same processors: sharp's PNG ${against(bySharp)}, Ringside's own ${against(own)}`,
+  ]
+}
+
+function peerLines(four: Rates, alone: (PeerRate | string)[], beside: (PeerRate | string)[], cores: number): string[] {
+  const skipped = [...alone, ...beside].find((rate) => typeof rate === 'string')
+  if (skipped !== undefined) return [`  ${skipped}`]
+  const rate = rateOf(four)
+  const line = (rates: (PeerRate | string)[], what: string) => {
+    const measured = rates.filter((one) => typeof one !== 'string')
+    const peer = median(measured.map((one) => one.rate))
+    const processor = median(measured.map((one) => one.processor))
+    const times = rate / peer
+    const text = `  imaging.py, ${what}: ${peer.toFixed(0)} candidates/s, ${processor.toFixed(2)} ms of processor time each; Ringside is ${times.toFixed(1)} times as fast, for ${(processorOf(four) / processor).toFixed(2)} of the processor time`
+    return { text, times }
+  }
+  const one = line(alone, 'as it is, in one process')
+  return [
+    `${one.text} (aim ${AIM_PEER} times: ${verdict(one.times >= AIM_PEER)})`,
+    line(beside, `in ${cores} processes at once`).text,
   ]
 }

@@ -4,6 +4,7 @@ import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
 import { benchConsensus } from './bench-consensus'
 import { benchImaging } from './bench-imaging'
+import { benchImagingScale } from './bench-imaging-scale'
 import { benchIntake } from './bench-intake'
 import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
@@ -12,6 +13,7 @@ import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   imaging: benchImaging,
+  'imaging-scale': benchImagingScale,
   intake: benchIntake,
   'lens-light': () => benchLensLight(),
   match: benchMatch,
