@@ -11,6 +11,12 @@ export async function permitLead(slug: string): Promise<{ db: Kysely<DB>; permit
   return { db, permit: await permitCampaign(db, await getViewer(), slug, 'lead') }
 }
 
+/** For form actions of leads and graders. @throws Problem, which `failedForm` turns into the form's message. */
+export async function permitGrader(slug: string): Promise<{ db: Kysely<DB>; permit: CampaignPermit<'grade'> }> {
+  const db = await database()
+  return { db, permit: await permitCampaign(db, await getViewer(), slug, 'grade') }
+}
+
 /** For form actions of an administrator. @throws Problem */
 export async function permitAdministrator(): Promise<{ db: Kysely<DB>; permit: SitePermit }> {
   const permit = permitSite(await getViewer())

@@ -110,6 +110,8 @@ function show(
       personId={7}
       evidence={{ ...EVIDENCE, judgement }}
       neighbours={neighbours}
+      talk={null}
+      asked={null}
       ruleAction={ruleAction}
     />,
   )

@@ -7,6 +7,8 @@ import { counted, moment } from '@/components/campaigns/in-words'
 import { LIGHT_KEYS } from '@/components/light/light-keys'
 import { useLight } from '@/components/light/use-light'
 import { useLightKeys } from '@/components/light/use-light-keys'
+import { Discussion } from '@/components/discussion/discussion'
+import { AskedLooks, type Talk } from '@/components/discussion/talk'
 import type { FormAction } from '@/components/people/use-kept-form'
 import { KeyLine } from '@/components/splits/key-line'
 import { CopyText } from '@/components/table/copy-text'
@@ -41,6 +43,10 @@ export interface EvidenceScreenProps {
   personId: number
   evidence: CandidateEvidence
   neighbours: { previous: Neighbour | null; next: Neighbour | null }
+  /** null: withheld, like the judgement. */
+  talk: Talk | null
+  /** A look that is asked of the reader, for which the judgement is withheld. */
+  asked: { by: string; note: string | null } | null
   /** For leads: rules on this candidate. */
   ruleAction: FormAction | null
 }
@@ -55,7 +61,8 @@ function Section({ title, children }: { title: string; children: ReactNode }) {
 }
 
 /** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
-export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleAction }: EvidenceScreenProps) {
+export function EvidenceScreen(props: EvidenceScreenProps) {
+  const { slug, personId, evidence, neighbours, talk, asked, ruleAction } = props
   const [view, setView] = useState(0)
   const [blinking, setBlinking] = useState(false)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
@@ -111,9 +118,15 @@ export function EvidenceScreen({ slug, personId, evidence, neighbours, ruleActio
             </Section>
           ) : null}
           <CandidateFacts evidence={evidence} />
+          {talk ? (
+            <section id="discussion" className="flex scroll-mt-6 flex-col gap-2.5 border-t border-line pt-5">
+              <h2 className="text-small font-semibold text-mute">Discussion</h2>
+              <Discussion thread={talk.thread} action={talk.post} draftKey={talk.draftKey} />
+            </section>
+          ) : null}
         </div>
         <div className="flex min-w-0 flex-col gap-7">
-          {judgement ? <JudgementColumn judgement={judgement} /> : <Withheld slug={slug} />}
+          {judgement ? <JudgementColumn judgement={judgement} talk={talk} /> : <Withheld slug={slug} asked={asked} />}
           {judgement && ruleAction ? (
             <Section title="Rule on it">
               {judgement.calibration ? (
@@ -153,12 +166,13 @@ function StateReason({ judgement }: { judgement: Judgement }) {
   )
 }
 
-function JudgementColumn({ judgement }: { judgement: Judgement }) {
+function JudgementColumn({ judgement, talk }: { judgement: Judgement; talk: Talk | null }) {
   return (
     <>
       <Section title={gradesInWords(judgement.grades)}>
         <VoteStrip votes={judgement.votes} />
         <GradeList grades={judgement.grades} />
+        {talk ? <AskedLooks talk={talk} /> : null}
       </Section>
       {judgement.why ? null : (
         <Section title="The verdict and its sum">
@@ -175,13 +189,20 @@ function JudgementColumn({ judgement }: { judgement: Judgement }) {
   )
 }
 
-function Withheld({ slug }: { slug: string }) {
+function Withheld({ slug, asked }: { slug: string; asked: EvidenceScreenProps['asked'] }) {
   return (
     <div className="flex flex-col items-start gap-3 rounded-tray border border-dashed border-edge/60 px-5 py-6">
       <h2 className="text-title font-semibold">Your eyes first</h2>
+      {asked ? (
+        <p>
+          <b className="font-semibold">{asked.by} asks for your look.</b>
+          {asked.note ? <span className="text-mute"> “{asked.note}”</span> : null} It is the first on your bench.
+        </p>
+      ) : null}
       <p className="text-mute">
-        The grades of others, the verdict and the state are shown here once you have graded this candidate yourself, so
-        that nobody’s judgement sways yours. ‘Cannot judge’ does not open them.
+        {asked
+          ? 'Until you have given it, the grades of others, the verdict and the discussion are withheld, so that this look is your own.'
+          : 'The grades of others, the verdict, the state and the discussion are shown here once you have graded this candidate yourself, so that nobody’s judgement sways yours. ‘Cannot judge’ does not open them.'}
       </p>
       <ButtonLink tone="lamp" href={`/campaigns/${slug}/bench`}>
         To the bench

@@ -22,6 +22,7 @@ export function RulingForm({
   onChoose,
   reasonRef,
   keys = false,
+  many,
   hidden = {},
 }: {
   action: FormAction
@@ -31,6 +32,8 @@ export function RulingForm({
   onChoose?: (choice: RulingChoice) => void
   reasonRef?: RefObject<HTMLTextAreaElement | null>
   keys?: boolean
+  /** How many candidates it rules on, where not on the one that is shown. */
+  many?: number
   /** Further values for the action, such as which case comes next. */
   hidden?: Record<string, string>
 }) {
@@ -58,7 +61,11 @@ export function RulingForm({
   const offered = CHOICES.filter((one) => one.choice !== 'by-verdict' || standing)
   const { choice: choiceFault, reason: reasonFault } = state.errors ?? {}
   return (
-    <form {...formProps} className="flex flex-col gap-2.5" aria-label="Rule on this candidate">
+    <form
+      {...formProps}
+      className="flex flex-col gap-2.5"
+      aria-label={many === undefined ? 'Rule on this candidate' : 'Rule on the selected'}
+    >
       {standing ? (
         <p className="text-small">
           <span className="font-semibold">Reverse this ruling:</span> {standing.by} has ruled{' '}
@@ -119,6 +126,7 @@ export function RulingForm({
         </div>
         <Button tone="lamp" type="submit" disabled={pending} className="min-w-36">
           {pending ? 'Ruling…' : (chosen?.action ?? 'Rule')}
+          {many !== undefined && !pending ? `, ${many}` : ''}
         </Button>
       </div>
       {reasonFault ? (

@@ -1,7 +1,7 @@
 'use client'
 
 import Link from 'next/link'
-import type { RefObject } from 'react'
+import type { ReactNode, RefObject } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { GradeList, gradesInWords } from '@/components/evidence/grade-list'
 import { Position } from '@/components/evidence/position'
@@ -10,6 +10,8 @@ import { RulingForm } from '@/components/evidence/ruling-form'
 import { RulingList } from '@/components/evidence/ruling-record'
 import { ViewsTray } from '@/components/evidence/views-tray'
 import { WhyReliability } from '@/components/evidence/why-reliability'
+import { Discussion } from '@/components/discussion/discussion'
+import { AskedLooks, type Talk } from '@/components/discussion/talk'
 import type { LightStore } from '@/components/light/light-store'
 import type { FormAction } from '@/components/people/use-kept-form'
 import { Notice } from '@/components/ui/notice'
@@ -37,6 +39,8 @@ export function SplitCase({
   nextId,
   action,
   controls,
+  group,
+  talk,
 }: {
   slug: string
   evidence: CandidateEvidence
@@ -46,6 +50,9 @@ export function SplitCase({
   nextId: number | null
   action: FormAction
   controls: CaseControls
+  /** In place of the ruling on this case, while several are selected. */
+  group: ReactNode
+  talk: Talk | null
 }) {
   const { verdict, standingRuling, rulings, grades } = judgement
   return (
@@ -108,7 +115,14 @@ export function SplitCase({
             <section aria-label="Grades" className="flex flex-col gap-2">
               <h3 className="text-small font-semibold text-mute">{gradesInWords(grades)}</h3>
               <GradeList grades={grades} />
+              {talk ? <AskedLooks talk={talk} /> : null}
             </section>
+            {talk ? (
+              <section aria-label="Discussion" className="flex flex-col gap-2">
+                <h3 className="text-small font-semibold text-mute">Discussion</h3>
+                <Discussion thread={talk.thread} action={talk.post} draftKey={talk.draftKey} />
+              </section>
+            ) : null}
             {rulings.length > 0 ? (
               <section aria-label="Rulings" className="flex flex-col gap-2">
                 <h3 className="text-small font-semibold text-mute">{counted(rulings.length, 'ruling')}</h3>
@@ -119,7 +133,9 @@ export function SplitCase({
         </div>
       </div>
       <footer className="border-t border-line bg-raise px-5 py-3">
-        {judgement.calibration ? (
+        {group ? (
+          group
+        ) : judgement.calibration ? (
           <Notice>This is a calibration stamp: its truth is known, so it is never ruled on.</Notice>
         ) : (
           <RulingForm

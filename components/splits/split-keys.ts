@@ -7,6 +7,11 @@ export type SplitCommand =
   | { do: 'next view'; step: 1 | -1 }
   | { do: 'choose'; choice: RulingChoice }
   | { do: 'reason' }
+  /** Selects the case or leaves it out; moving with Shift selects on the way. */
+  | { do: 'select' }
+  | { do: 'select on'; step: 1 | -1 }
+  | { do: 'select alike' }
+  | { do: 'select none' }
 
 interface Pressed {
   key: string
@@ -18,9 +23,16 @@ interface Pressed {
   isComposing: boolean
 }
 
-/** What a single key means on the splits page; null with a modifier. The caller leaves out keys pressed while typing. */
+const SHIFTED: Record<string, SplitCommand> = {
+  J: { do: 'select on', step: 1 },
+  K: { do: 'select on', step: -1 },
+  S: { do: 'select alike' },
+}
+
+/** What a single key means on the splits page; null with another modifier than Shift. The caller leaves out keys pressed while typing. */
 export function splitCommand(event: Pressed): SplitCommand | null {
-  if (event.isComposing || event.ctrlKey || event.altKey || event.metaKey || event.shiftKey) return null
+  if (event.isComposing || event.ctrlKey || event.altKey || event.metaKey) return null
+  if (event.shiftKey) return SHIFTED[event.key.toUpperCase()] ?? null
   const digit = /^[1-9]$/.exec(event.key)?.[0] ?? /^Digit([1-9])$/.exec(event.code)?.[1]
   if (digit) return { do: 'view', index: Number(digit) - 1 }
   const key = event.key.toUpperCase()
@@ -29,6 +41,8 @@ export function splitCommand(event: Pressed): SplitCommand | null {
   if (key === 'ARROWRIGHT') return { do: 'next view', step: 1 }
   if (key === 'ARROWLEFT') return { do: 'next view', step: -1 }
   if (key === 'R') return { do: 'reason' }
+  if (key === 'S') return { do: 'select' }
+  if (key === 'ESCAPE') return { do: 'select none' }
   const chosen = CHOICES.find((one) => one.key === key)
   return chosen ? { do: 'choose', choice: chosen.choice } : null
 }
@@ -36,6 +50,7 @@ export function splitCommand(event: Pressed): SplitCommand | null {
 /** For the help line. */
 export const SPLIT_KEYS: { keys: string[]; does: string }[] = [
   { keys: ['J', 'K'], does: 'next, previous' },
+  { keys: ['S'], does: 'select; with Shift those alike' },
   { keys: ['1', '…', '9'], does: 'view' },
   { keys: ['F'], does: 'close field' },
   { keys: ['L'], does: 'light' },

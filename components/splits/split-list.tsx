@@ -4,8 +4,10 @@ import Link from 'next/link'
 import { useEffect, useRef } from 'react'
 import { StatePill } from '@/components/ui/state-pill'
 import { VoteStrip } from '@/components/ui/vote-strip'
+import { probabilityBeside } from '@/lib/science/agreement/weight-words'
 import { describeOutcome } from '@/lib/work/rulings/describe-ruling'
 import type { Splits } from '@/lib/work/rulings/list-splits'
+import type { Selection } from './use-selection'
 
 const figure = (value: number | null) => (value === null ? '–' : value.toFixed(2))
 
@@ -14,10 +16,12 @@ export function SplitList({
   splits,
   chosenId,
   hrefOf,
+  selection,
 }: {
   splits: Splits
   chosenId: number | null
   hrefOf: (id: number) => string
+  selection: Selection
 }) {
   const list = useRef<HTMLDivElement>(null)
   useEffect(() => {
@@ -29,13 +33,25 @@ export function SplitList({
       {cases.length > 0 ? (
         <ol aria-label="Splits" className="border-t border-line">
           {cases.map((one) => (
-            <li key={one.id} className="border-b border-line">
+            <li key={one.id} className={`relative border-b border-line ${selection.has(one.id) ? 'bg-lamp/10' : ''}`}>
+              <label className="absolute inset-y-0 left-0 grid w-9 cursor-pointer place-items-center">
+                <input
+                  type="checkbox"
+                  aria-label={`Select ${one.name}`}
+                  checked={selection.has(one.id)}
+                  onChange={(event) => {
+                    const { shiftKey } = event.nativeEvent as MouseEvent
+                    selection.toggle(one.id, shiftKey === true)
+                  }}
+                  className="size-4 accent-lamp"
+                />
+              </label>
               <Link
                 href={hrefOf(one.id)}
                 scroll={false}
                 prefetch={false}
                 aria-current={one.id === chosenId ? 'true' : undefined}
-                className={`grid grid-cols-[3.5rem_minmax(0,1fr)] items-center gap-3 px-5 py-2.5 -outline-offset-2 ${
+                className={`grid grid-cols-[3.5rem_minmax(0,1fr)] items-center gap-3 py-2.5 pl-9 pr-5 -outline-offset-2 ${
                   one.id === chosenId ? 'bg-raise shadow-[inset_3px_0_0_var(--split)]' : 'hover:bg-raise/60'
                 }`}
               >
@@ -47,8 +63,16 @@ export function SplitList({
                 <span className="flex min-w-0 flex-col gap-1.5">
                   <span className="figures flex items-baseline justify-between gap-2 text-small">
                     <span className="truncate">{one.name}</span>
-                    <span className="whitespace-nowrap text-mute">
-                      mean <span className="text-text">{figure(one.mean)}</span> ± {figure(one.spread)}
+                    <span className="whitespace-nowrap text-mute" title={one.worth}>
+                      {one.probability === null ? (
+                        <>
+                          mean <span className="text-text">{figure(one.mean)}</span> ± {figure(one.spread)}
+                        </>
+                      ) : (
+                        <>
+                          lens <span className="text-text">{probabilityBeside(one.probability)}</span>
+                        </>
+                      )}
                     </span>
                   </span>
                   <VoteStrip votes={one.votes} />

@@ -1,10 +1,7 @@
-import { render, screen, within } from '@testing-library/react'
-import userEvent from '@testing-library/user-event'
+import { screen, within } from '@testing-library/react'
 import { describe, expect, it, vi, beforeEach } from 'vitest'
-import type { FormState } from '@/components/ui/form-state'
-import type { CandidateEvidence, EvidenceRuling, Judgement } from '@/lib/work/rulings/candidate-evidence'
-import type { NewestRun } from '@/lib/work/consensus/newest-run'
-import { SplitsScreen, type SplitsScreenProps } from './splits-screen'
+import type { EvidenceRuling, Judgement } from '@/lib/work/rulings/candidate-evidence'
+import { AT, evidence, NONE, show } from './_splits-fixture'
 
 const push = vi.fn()
 vi.mock('next/navigation', async (original) => ({
@@ -16,155 +13,6 @@ beforeEach(() => {
   push.mockClear()
   localStorage.clear()
 })
-
-const geometry = { pixelScaleArcsec: 0.2, northAngleDeg: 0, eastLeft: true }
-const view = (key: string, label: string) => ({
-  key,
-  label,
-  url: `/stamps/${key}`,
-  width: 80,
-  height: 80,
-  note: null,
-  geometry,
-})
-const votes = { A: 2, B: 0, C: 0, N: 1, U: 0 }
-const RULE = {
-  method: 'mean' as const,
-  id: 1,
-  version: 1,
-  gradesWanted: 4,
-  leastGrades: 3,
-  confirmMean: 2,
-  setAsideMean: 1,
-  splitSpread: 0.9,
-}
-const AT = '2026-12-01T12:00:00.000Z'
-
-function judgement(more: Partial<Judgement> = {}): Judgement {
-  return {
-    state: 'split',
-    stateSince: AT,
-    stateReason: 'Split: grades A, A, N; the spread 1.41 is above 0.90.',
-    calibration: false,
-    score: null,
-    lensRedshift: null,
-    sourceRedshift: null,
-    votes,
-    grades: [
-      {
-        id: 1,
-        by: 'curlew',
-        own: false,
-        grade: 'A',
-        occasion: 'first',
-        informed: false,
-        tags: ['arc'],
-        remark: null,
-        seconds: 7,
-        givenAt: AT,
-      },
-      {
-        id: 2,
-        by: 'plover',
-        own: false,
-        grade: 'N',
-        occasion: 'first',
-        informed: false,
-        tags: [],
-        remark: 'Tidal <b>tail</b>?',
-        seconds: 22.4,
-        givenAt: AT,
-      },
-    ],
-    verdict: {
-      id: 9,
-      outcome: 'split',
-      grades: 3,
-      cannotJudge: 0,
-      mean: 2,
-      spread: Math.SQRT2,
-      probability: null,
-      reason: '',
-      rule: RULE,
-      at: AT,
-    },
-    why: null,
-    rulings: [],
-    standingRuling: null,
-    history: [],
-    designation: null,
-    ...more,
-  }
-}
-
-function evidence(id: number, name: string, more: Partial<Judgement> = {}): CandidateEvidence {
-  return {
-    id,
-    name,
-    raDeg: 6.873523,
-    decDeg: -1.149741,
-    pixelScaleArcsec: 0.2,
-    files: [],
-    pictures: {
-      views: [view('colour', 'Colour'), view('deep', 'Deep'), view('band:g', 'g')],
-      geometry,
-      recipe: 1,
-      closeFieldArcsec: 12,
-      planesUrl: null,
-    },
-    judgement: judgement(more),
-  }
-}
-
-const RUN: NewestRun = {
-  id: 3,
-  ruleVersion: 1,
-  createdAt: AT,
-  summary: {
-    candidates: 72,
-    grades: 227,
-    cannotJudge: 5,
-    graders: 4,
-    open: 7,
-    split: 2,
-    confirmed: 21,
-    setAside: 32,
-    changed: 72,
-    alphaOrdinal: 0.62,
-    alphaNote: 'Over 224 grades.',
-    fleissKappa: null,
-    kappaNote: 'No candidate has two grades.',
-  },
-}
-
-function show(more: Partial<SplitsScreenProps> = {}) {
-  const ruleAction = vi.fn(async (_before: FormState, _form: FormData): Promise<FormState> => ({}))
-  const cases = [1, 2, 3].map((id) => ({
-    id,
-    name: `SWS000${id}`,
-    mean: 2 - id / 10,
-    spread: 1.41,
-    votes,
-    picture: null,
-  }))
-  const props: SplitsScreenProps = {
-    slug: 'north',
-    personId: 1,
-    splits: { total: 3, cases, ruled: [] },
-    run: RUN,
-    open: 0,
-    evidence: evidence(2, 'SWS0002'),
-    decides: ['Two more A grades would confirm it.'],
-    justRuled: null,
-    missing: false,
-    ruleAction,
-    runAction: async () => ({ done: 'Nothing has changed since the newest run, so nothing was written.' }),
-    ...more,
-  }
-  const { rerender } = render(<SplitsScreen {...props} />)
-  const showCase = (id: number) => rerender(<SplitsScreen {...props} evidence={evidence(id, `SWS000${id}`)} />)
-  return { ruleAction, user: userEvent.setup(), showCase }
-}
 
 const big = () => screen.getByRole('img', { name: / of SWS0002/ })
 const reason = () => screen.getByRole('textbox', { name: /Reason/ })
@@ -305,19 +153,19 @@ describe('the splits page', () => {
   })
 
   it('says what to do next when nothing is split', () => {
-    const none = { splits: { total: 0, cases: [], ruled: [] }, evidence: null, open: 7 }
+    const none = { splits: NONE, evidence: null, open: 7 }
     show(none)
     expect(screen.getByRole('heading', { name: 'Nothing is split' })).toBeVisible()
     expect(screen.getByText(/7 candidates still wait for grades/)).toBeVisible()
   })
 
   it('calls the catalogue ready only when nothing is open now, whatever the newest run knew', () => {
-    show({ splits: { total: 0, cases: [], ruled: [] }, evidence: null, open: 0 })
+    show({ splits: NONE, evidence: null, open: 0 })
     expect(screen.getByText(/Every candidate is decided/)).toBeVisible()
   })
 
   it('before the first run sends to it', () => {
-    show({ splits: { total: 0, cases: [], ruled: [] }, evidence: null, run: null })
+    show({ splits: NONE, evidence: null, run: null })
     expect(screen.getByRole('heading', { name: 'No consensus has run yet' })).toBeVisible()
     expect(screen.getByRole('button', { name: 'Run consensus now' })).toBeEnabled()
   })

@@ -7,18 +7,24 @@ import { useKeySwitch } from '@/components/bench/use-key-switch'
 import { useLight } from '@/components/light/use-light'
 import { useLightKeys } from '@/components/light/use-light-keys'
 import { counted } from '@/components/campaigns/in-words'
+import type { FormState } from '@/components/ui/form-state'
+import type { Talk } from '@/components/discussion/talk'
 import type { FormAction } from '@/components/people/use-kept-form'
-import { ButtonLink } from '@/components/ui/button'
+import { Button, ButtonLink } from '@/components/ui/button'
 import { EmptyState, Notice } from '@/components/ui/notice'
 import type { NewestRun } from '@/lib/work/consensus/newest-run'
 import type { CandidateEvidence } from '@/lib/work/rulings/candidate-evidence'
 import { describeOutcome } from '@/lib/work/rulings/describe-ruling'
 import type { RecentRuling, Splits } from '@/lib/work/rulings/list-splits'
 import type { RulingChoice } from '@/lib/work/rulings/ruling-input'
+import { alikeInWords, alikeTo } from './alike'
+import { GroupResult, GroupRulingPanel, type GroupAction, type GroupState } from './group-ruling'
 import { KeyLine } from './key-line'
 import { RunPanel, type RunAction } from './run-panel'
 import { SplitCase } from './split-case'
 import { SplitList } from './split-list'
+import { SplitOrderChoice } from './split-order'
+import { useSelection } from './use-selection'
 import { useSplitKeys } from './use-split-keys'
 
 export interface SplitsScreenProps {
@@ -30,11 +36,14 @@ export interface SplitsScreenProps {
   open: number
   evidence: CandidateEvidence | null
   decides: string[]
+  talk: Talk | null
   /** The ruling just made, to say so and to offer its reversal. */
   justRuled: RecentRuling | null
   /** The address names a case that is not here. */
   missing: boolean
   ruleAction: FormAction
+  groupAction: GroupAction
+  undoGroupAction: GroupAction
   runAction: RunAction
 }
 
@@ -55,22 +64,51 @@ export function SplitsScreen(props: SplitsScreenProps) {
   // View and choice belong to one case: another case, and one that is come back to, starts afresh.
   if (now.id !== id) setNow({ id, view: 0, choice: null })
   const reasonRef = useRef<HTMLTextAreaElement>(null)
-  const hrefOf = (caseId: number) => `/campaigns/${slug}/splits?case=${caseId}`
+  const { order: sort } = splits
+  const hrefOf = (caseId: number) =>
+    `/campaigns/${slug}/splits?case=${caseId}${sort === 'worth' ? '' : `&sort=${sort}`}`
+  const selection = useSelection(splits.cases.map((one) => one.id))
+  const [group, setGroup] = useState<GroupState['group']>()
   const views = evidence?.pictures.views.length ?? 0
   const judgement = evidence?.judgement ?? null
 
   const order = [...splits.cases.map((one) => one.id), ...splits.ruled.map((one) => one.candidateId)]
-  const move = (step: 1 | -1) => {
-    const here = order.indexOf(chosenId ?? -1)
-    const target = order[here < 0 ? 0 : here + step]
+  const goTo = (target: number | undefined) => {
     if (target === undefined || target === chosenId) return
     startTransition(() => {
       showChosen(target)
       router.push(hrefOf(target), { scroll: false })
     })
   }
+  const neighbour = (step: 1 | -1) => {
+    const here = order.indexOf(chosenId ?? -1)
+    return order[here < 0 ? 0 : here + step]
+  }
+  const move = (step: 1 | -1) => goTo(neighbour(step))
+  const selectOn = (step: 1 | -1) => {
+    const both = [chosenId, neighbour(step)].filter((one) => splits.cases.some((listed) => listed.id === one))
+    selection.add(both as number[])
+    move(step)
+  }
+  const alike = chosenId === null ? [] : alikeTo(splits.cases, chosenId)
+  /** What came of a ruling on several is told above the case, which moves on to the first split that is left. */
+  const ruleOnSelected = async (before: FormState, form: FormData): Promise<FormState> => {
+    const { group: outcome, ...after } = await props.groupAction(before, form)
+    if (outcome) {
+      setGroup(outcome)
+      setNow({ ...now, choice: null })
+      const done = new Set(outcome.ruled.map(({ candidateId }) => candidateId))
+      if (done.has(chosenId ?? 0)) goTo(order.find((one) => !done.has(one)))
+    }
+    return after
+  }
+  const undoGroup = async (before: FormState, form: FormData): Promise<FormState> => {
+    const { group: outcome, ...after } = await props.undoGroupAction(before, form)
+    if (outcome) setGroup(outcome)
+    return after
+  }
   const choose = (choice: RulingChoice) => {
-    if (choice === 'by-verdict' && !judgement?.standingRuling) return
+    if (choice === 'by-verdict' && (selection.ids.length > 0 || !judgement?.standingRuling)) return
     // The focus stays: whoever goes on with R, as the line of keys says, would else write that letter into the reason.
     setNow({ ...now, choice })
   }
@@ -84,9 +122,26 @@ export function SplitsScreen(props: SplitsScreenProps) {
     if (command.do === 'next view' && views > 0) setNow({ ...now, view: (now.view + command.step + views) % views })
     if (command.do === 'choose') choose(command.choice)
     if (command.do === 'reason') reasonRef.current?.focus()
+    if (command.do === 'select' && splits.cases.some((one) => one.id === chosenId)) selection.toggle(chosenId!, false)
+    if (command.do === 'select on') selectOn(command.step)
+    if (command.do === 'select alike') selection.add(alike)
+    if (command.do === 'select none') selection.clear()
   })
 
   const place = splits.cases.findIndex((one) => one.id === id)
+  const groupPanel =
+    selection.ids.length > 0 ? (
+      <GroupRulingPanel
+        cases={splits.cases.filter((one) => selection.has(one.id))}
+        choice={now.choice}
+        onChoose={choose}
+        reasonRef={reasonRef}
+        keys={keysOn}
+        action={ruleOnSelected}
+        onGo={goTo}
+        onClear={selection.clear}
+      />
+    ) : null
   const next = place < 0 ? splits.cases[0] : (splits.cases[place + 1] ?? splits.cases[place - 1])
   return (
     <div className="grid lg:h-dvh lg:grid-cols-[23.5rem_minmax(0,1fr)] lg:grid-rows-[minmax(0,1fr)_auto]">
@@ -95,18 +150,34 @@ export function SplitsScreen(props: SplitsScreenProps) {
           <h1 className="text-title font-semibold">
             {splits.total > 0 ? counted(splits.total, 'split') : props.run ? 'Nothing is split' : 'No splits yet'}
           </h1>
-          <p className="text-note text-mute">
-            {splits.total > 0
-              ? 'The likeliest lenses first'
-              : props.run
-                ? 'The rule could decide whatever has its grades.'
-                : 'They come with the first consensus run.'}
-          </p>
+          {splits.total > 0 ? (
+            <SplitOrderChoice
+              order={sort}
+              method={splits.method}
+              onChoose={(order) => router.push(`/campaigns/${slug}/splits${order === 'worth' ? '' : `?sort=${order}`}`)}
+            />
+          ) : (
+            <p className="text-note text-mute">
+              {props.run ? 'The rule could decide whatever has its grades.' : 'They come with the first consensus run.'}
+            </p>
+          )}
+          {place >= 0 && alike.length > 1 ? (
+            <Button
+              tone="bare"
+              onClick={() => selection.add(alike)}
+              className="min-h-7 justify-start px-0 py-0 text-left text-note font-normal"
+            >
+              Select the {alike.length} {alikeInWords(splits.cases[place])}
+            </Button>
+          ) : null}
         </header>
-        <SplitList splits={splits} chosenId={chosenId} hrefOf={hrefOf} />
+        <SplitList splits={splits} chosenId={chosenId} hrefOf={hrefOf} selection={selection} />
       </div>
       <div className="flex min-h-0 min-w-0 flex-col border-t border-line lg:col-start-2 lg:row-span-2 lg:row-start-1 lg:border-t-0">
-        {props.justRuled ? <JustRuled ruling={props.justRuled} href={hrefOf(props.justRuled.candidateId)} /> : null}
+        {group ? <GroupResult group={group} undo={undoGroup} onDismiss={() => setGroup(undefined)} /> : null}
+        {props.justRuled && !group ? (
+          <JustRuled ruling={props.justRuled} href={hrefOf(props.justRuled.candidateId)} />
+        ) : null}
         {props.missing ? (
           <div className="px-5 pt-4">
             <Notice tone="alarm">
@@ -125,6 +196,8 @@ export function SplitsScreen(props: SplitsScreenProps) {
                 decides={props.decides}
                 nextId={next && next.id !== id ? next.id : null}
                 action={props.ruleAction}
+                group={groupPanel}
+                talk={props.talk}
                 controls={{
                   view: now.view,
                   onView: (view) => setNow({ ...now, view }),

@@ -88,6 +88,17 @@ export async function openAsks(db: Kysely<DB>, permit: CampaignPermit<'lead'>): 
   }))
 }
 
+/** The open look at a candidate that the person is asked for, with who asks by name, as the mail says it. */
+export async function askOfMe(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateId: number,
+): Promise<{ by: string; note: string | null } | null> {
+  const rows = await listAsksOf(db, candidateId)
+  const open = rows.find((row) => row.personId === permit.viewer.id && stateOf(row) === 'open')
+  return open ? { by: open.askedBy, note: open.note } : null
+}
+
 /** How many looks are asked of the person who asks. */
 export async function askedOfMe(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<number> {
   return (await countAsks(db, { campaignId: permit.campaign.id, personId: permit.viewer.id })).open

@@ -110,7 +110,7 @@ describe('the evidence of a candidate', () => {
 })
 
 describe('the list of splits', () => {
-  it('has the highest mean first, with votes, and what was ruled last below', async () => {
+  it('has first what is worth most to settle, with votes, and what was ruled last below', async () => {
     const { db, campaign, graders, leads, id } = await gradedCase()
     const low = await addImagedCandidate(db, campaign, 'low')
     for (const [index, grade] of (['N', 'N', 'A', 'N'] as const).entries()) {

@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { findCandidate } from '@/db/queries/candidates'
+import { findCandidate, listCandidateNames } from '@/db/queries/candidates'
 import type { DB } from '@/db/schema'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import type { CampaignPermit } from '@/lib/work/people/permission'
@@ -14,4 +14,13 @@ export async function candidateName(
   const { campaignId, withCalibration } = candidateScope(permit)
   const candidate = await findCandidate(db, campaignId, candidateId)
   return candidate && (candidate.truth === null || withCalibration) ? candidate.name : null
+}
+
+/** Names of those of the candidates that are in the campaign. */
+export function candidateNames(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  candidateIds: readonly number[],
+): Promise<Map<number, string>> {
+  return listCandidateNames(db, permit.campaign.id, candidateIds)
 }

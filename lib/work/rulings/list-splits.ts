@@ -5,14 +5,21 @@ import { countVotes } from '@/db/queries/consensus'
 import { listRecentRulings, listSplits, type RecentRuling } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
+import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type PictureView } from '@/lib/work/stamps/candidate-pictures'
+import { worthInWords, type MeanThresholds, type SplitOrder } from './split-worth'
 
 export interface SplitCase {
   id: number
   name: string
   mean: number | null
   spread: number | null
+  /** of a lens, by the live estimate; null by the mean */
+  probability: number | null
+  /** What settling it is worth, in words. */
+  worth: string
+  lastRulingId: number | null
   votes: Record<GradeLetter, number>
   picture: PictureView | null
 }
@@ -22,6 +29,8 @@ export type { RecentRuling }
 export interface Splits {
   /** Of the whole campaign; `cases` holds the first of them. */
   total: number
+  order: SplitOrder
+  method: 'mean' | 'reliability'
   cases: SplitCase[]
   /** Candidates that were ruled on last, newest first. */
   ruled: RecentRuling[]
@@ -30,10 +39,16 @@ export interface Splits {
 export const MOST_CASES = 200
 const MOST_RULED = 8
 
-/** The splits that wait for a lead, highest mean first, and what was ruled last. */
-export async function listSplitCases(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<Splits> {
+/** The splits that wait for a lead, by default those first that are worth most, and what was ruled last. */
+export async function listSplitCases(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  order: SplitOrder = 'worth',
+): Promise<Splits> {
   const { campaign } = permit
-  const rows = await listSplits(db, campaign.id, MOST_CASES)
+  const rule = await ruleInForce(db, campaign.id)
+  const thresholds: MeanThresholds = rule.method === 'mean' ? rule : null
+  const rows = await listSplits(db, campaign.id, { by: order, thresholds }, MOST_CASES)
   const ids = rows.map((row) => row.id)
   const [counts, votes, pictures, ruled] = await Promise.all([
     countCandidates(db, campaign.id),
@@ -43,12 +58,17 @@ export async function listSplitCases(db: Kysely<DB>, permit: CampaignPermit<'lea
   ])
   return {
     total: counts.split,
+    order,
+    method: rule.method,
     ruled,
-    cases: rows.map(({ id, name, mean, spread }) => ({
+    cases: rows.map(({ id, name, mean, spread, probability, lastRulingId }) => ({
       id,
       name,
       mean,
       spread,
+      probability,
+      worth: worthInWords({ probability, mean, spread }, thresholds),
+      lastRulingId,
       votes: votes.get(id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 },
       picture: pictures.get(id)?.views.find((view) => view.url !== null) ?? null,
     })),

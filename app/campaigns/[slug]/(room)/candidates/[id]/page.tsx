@@ -2,10 +2,12 @@ import { notFound } from 'next/navigation'
 import { permitPage } from '@/app/_lib/page-permit'
 import { EvidenceScreen } from '@/components/evidence/evidence-screen'
 import { Problem } from '@/lib/platform/problems/problem'
+import { askOfMe } from '@/lib/work/discussion/list-asks'
 import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
 import { neighboursOf } from '@/lib/work/rulings/find-neighbours'
 import { candidateName } from '@/lib/work/rulings/candidate-name'
 import { ruleOnCandidateAction } from './actions'
+import { talkOf } from './talk'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
   const { slug, id: text } = await params
@@ -32,6 +34,8 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
       personId={permit.viewer.id}
       evidence={evidence}
       neighbours={await neighboursOf(db, permit, id)}
+      talk={await talkOf(db, permit, id, { calibration: evidence.judgement?.calibration ?? false })}
+      asked={evidence.judgement ? null : await askOfMe(db, permit, id)}
       ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}
     />
   )
