@@ -79,7 +79,7 @@ export function BarPlot({
                       width={barWidth}
                       height={low - high}
                       {...fillOf(parts[part].fill)}
-                      stroke="var(--page)"
+                      stroke={parts[part].fill === 'none' ? 'var(--edge)' : 'var(--page)'}
                       strokeWidth="0.75"
                     />
                   ) : null

@@ -10,6 +10,7 @@ export interface PlotTable {
 
 const FONT = "'Atkinson Hyperlegible Next', 'Atkinson Hyperlegible', system-ui, sans-serif"
 const TITLE_HEIGHT = 34
+const MARGIN = 12
 const NAMESPACE = 'http://www.w3.org/2000/svg'
 /** For the page only: a file is looked at, not walked through. */
 const PAGE_ATTRIBUTES = [
@@ -38,19 +39,14 @@ export function svgFile(svg: SVGSVGElement, title: string, valueOf: (variable: s
       if (value.includes('var(')) element.setAttribute(name, resolve(value, valueOf))
     }
   }
-  copy.setAttribute('viewBox', `0 ${-TITLE_HEIGHT} ${width} ${height + TITLE_HEIGHT}`)
-  copy.setAttribute('width', String(width))
-  copy.setAttribute('height', String(height + TITLE_HEIGHT))
+  const whole = { x: -MARGIN, y: -TITLE_HEIGHT, width: width + 2 * MARGIN, height: height + TITLE_HEIGHT }
+  copy.setAttribute('viewBox', Object.values(whole).join(' '))
+  copy.setAttribute('width', String(whole.width))
+  copy.setAttribute('height', String(whole.height))
   copy.setAttribute('font-family', FONT)
   const drawn = copy.querySelector('desc')
-  const back = element('rect', {
-    x: 0,
-    y: -TITLE_HEIGHT,
-    width,
-    height: height + TITLE_HEIGHT,
-    fill: valueOf('--page'),
-  })
-  const head = element('text', { x: 12, y: -12, fill: valueOf('--text'), 'font-size': 15, 'font-weight': 600 })
+  const back = element('rect', { ...whole, fill: valueOf('--page') })
+  const head = element('text', { x: 0, y: -12, fill: valueOf('--text'), 'font-size': 15, 'font-weight': 600 })
   head.textContent = title
   for (const part of [head, back]) {
     if (drawn) drawn.after(part)

@@ -93,7 +93,12 @@ export function PlotFrame({
             {asTable ? <ChartSpline size={14} aria-hidden="true" /> : <Table2 size={14} aria-hidden="true" />}
             {asTable ? 'Plot' : 'Table'}
           </ToolButton>
-          <ToolButton aria-label={`Save the plot as SVG: ${title}`} onClick={saveSvg} disabled={asTable}>
+          <ToolButton
+            title="In the colours of the theme that you see"
+            aria-label={`Save the plot as SVG: ${title}`}
+            onClick={saveSvg}
+            disabled={asTable}
+          >
             <Download size={14} aria-hidden="true" />
             SVG
           </ToolButton>

@@ -35,19 +35,21 @@ const SETTLED = 1e-7
  * as n = s (1 - s) (I_ss - I_st^2 / I_tt): the number of lenses where the truth is known, 0 where p tells nothing.
  */
 export function estimateTwoRates(judged: readonly JudgedGrade[]): TwoRates {
+  const groups = groupByProbability(judged)
   let seen = START
   let passed = START
   let smooth = { seen, passed }
   for (let iteration = 0; iteration < ITERATIONS; iteration++) {
     const sums = { lenses: 0, seen: 0, others: 0, passed: 0 }
-    for (const { saysLens, probability } of judged) {
-      const lens = probability * (saysLens ? seen : 1 - seen)
-      const other = (1 - probability) * (saysLens ? 1 - passed : passed)
-      const isLens = lens + other > 0 ? lens / (lens + other) : probability
-      sums.lenses += isLens
-      sums.others += 1 - isLens
-      if (saysLens) sums.seen += isLens
-      else sums.passed += 1 - isLens
+    for (const { probability, saying, not } of groups) {
+      const isLensIfSaying = lensShare(probability * seen, (1 - probability) * (1 - passed))
+      const isLensIfNot = lensShare(probability * (1 - seen), (1 - probability) * passed)
+      const lensesSeen = saying * isLensIfSaying
+      const lensesMissed = not * isLensIfNot
+      sums.lenses += lensesSeen + lensesMissed
+      sums.others += saying + not - lensesSeen - lensesMissed
+      sums.seen += lensesSeen
+      sums.passed += not - lensesMissed
     }
     const next = {
       seen: sums.lenses > 0 ? sums.seen / sums.lenses : START,
@@ -59,18 +61,49 @@ export function estimateTwoRates(judged: readonly JudgedGrade[]): TwoRates {
     passed = next.passed
     if (change < SETTLED) break
   }
-  return { seen, passed, ...effectiveNumbers(judged, smooth.seen, smooth.passed) }
+  return { seen, passed, ...effectiveNumbers(groups, smooth.seen, smooth.passed) }
+}
+
+const lensShare = (lens: number, other: number) => (lens + other > 0 ? lens / (lens + other) : 0)
+
+/** Grades whose candidates are about equally likely lenses, at their mean probability. */
+interface Group {
+  probability: number
+  saying: number
+  not: number
+}
+
+/** In log odds; candidates of known truth stand apart. */
+const GROUP_WIDTH = 0.05
+const FARTHEST = 15
+
+/** So that the cost does not grow with the grades of a window. */
+function groupByProbability(judged: readonly JudgedGrade[]): Group[] {
+  const groups = new Map<number, Group>()
+  for (const { probability, saysLens } of judged) {
+    const logOdds = Math.log(probability) - Math.log1p(-probability)
+    const isKnown = probability === 0 || probability === 1
+    const near = Math.round(Math.min(FARTHEST, Math.max(-FARTHEST, logOdds)) / GROUP_WIDTH)
+    const key = isKnown ? probability + 2 * Math.ceil(FARTHEST / GROUP_WIDTH) : near
+    const group = groups.get(key) ?? { probability: 0, saying: 0, not: 0 }
+    group.probability += probability
+    if (saysLens) group.saying += 1
+    else group.not += 1
+    groups.set(key, group)
+  }
+  for (const group of groups.values()) group.probability /= group.saying + group.not
+  return [...groups.values()]
 }
 
 /** @param seen, passed inside (0, 1) */
-function effectiveNumbers(judged: readonly JudgedGrade[], seen: number, passed: number) {
+function effectiveNumbers(groups: readonly Group[], seen: number, passed: number) {
   const information = { lenses: 0, both: 0, others: 0 }
-  for (const { probability: p } of judged) {
+  for (const { probability: p, saying, not } of groups) {
     const says = p * seen + (1 - p) * (1 - passed)
-    const variance = says * (1 - says)
-    information.lenses += (p * p) / variance
-    information.both += (p * (1 - p)) / variance
-    information.others += ((1 - p) * (1 - p)) / variance
+    const weight = (saying + not) / (says * (1 - says))
+    information.lenses += weight * p * p
+    information.both += weight * p * (1 - p)
+    information.others += weight * (1 - p) * (1 - p)
   }
   const left = (own: number, other: number) => Math.max(0, own - (other > 0 ? information.both ** 2 / other : 0))
   return {
