@@ -8,6 +8,7 @@ import {
   type Driver,
   type SqliteDialectConfig,
 } from 'kysely'
+import { keepStatements } from './kept-statements'
 import { migrateToLatest } from './migrator'
 import type { DB } from './schema'
 
@@ -39,7 +40,7 @@ export function openDatabase(path: string): Kysely<DB> {
   sqlite.pragma('synchronous = FULL')
   sqlite.pragma('foreign_keys = ON')
   sqlite.pragma('busy_timeout = 10000')
-  return new Kysely<DB>({ dialect: new ImmediateDialect({ database: sqlite }) })
+  return new Kysely<DB>({ dialect: new ImmediateDialect({ database: keepStatements(sqlite) }) })
 }
 
 /** A fresh database in memory with every migration applied: the real schema and triggers, for tests. */

@@ -143,15 +143,21 @@ export interface ValuedCandidate extends QueuedCandidate {
   grades: number | null
   /** Live leases of other people. */
   heldByOthers: number
+  /** Looks that could still be given, if nobody else had it on the bench. */
+  room: number
 }
 
-/** What may be lent to this person next, where a look tells most first, with what its worth is judged by. */
+/**
+ * What may be lent to this person next, where a look tells most first, with what its worth is judged by. Whether others have taken
+ * the room is left to the caller, because counting their leases once a row is what costs most here.
+ */
 export async function listNextByValue(db: Kysely<DB>, asker: Asker, limit: number): Promise<ValuedCandidate[]> {
-  return lendable(db, asker, 'by rule')
+  return notOnBench(db, asker, 'by rule')
     .leftJoin('estimate', 'estimate.candidate_id', 'candidate.id')
     .select(SHOWN)
     .select(['estimate.evidence', 'estimate.probability', 'estimate.grades'])
     .select(othersLeases(asker).as('heldByOthers'))
+    .select(sql<number>`max(${asker.gradesWanted}, candidate.looks_asked) - candidate.grades_given`.as('room'))
     .orderBy('candidate.look_value', 'desc')
     .orderBy('candidate.id')
     .limit(limit)
@@ -160,19 +166,21 @@ export async function listNextByValue(db: Kysely<DB>, asker: Asker, limit: numbe
 
 /** Open to this person, with room for one more look, and not on their bench yet. */
 function lendable(db: Kysely<DB>, asker: Asker, wanted: 'by lead' | 'by rule') {
-  return openTo(db, asker, wanted)
-    .where(hasRoom(asker))
-    .where((e) =>
-      e.not(
-        e.exists(
-          e
-            .selectFrom('lease')
-            .select('lease.id')
-            .whereRef('lease.candidate_id', '=', 'candidate.id')
-            .where('lease.person_id', '=', asker.personId),
-        ),
+  return notOnBench(db, asker, wanted).where(hasRoom(asker))
+}
+
+function notOnBench(db: Kysely<DB>, asker: Asker, wanted: 'by lead' | 'by rule') {
+  return openTo(db, asker, wanted).where((e) =>
+    e.not(
+      e.exists(
+        e
+          .selectFrom('lease')
+          .select('lease.id')
+          .whereRef('lease.candidate_id', '=', 'candidate.id')
+          .where('lease.person_id', '=', asker.personId),
       ),
-    )
+    ),
+  )
 }
 
 /** Live leases of everybody else in the campaign. */

@@ -84,8 +84,8 @@ async function listNext(
 }
 
 /** Candidates among which a grader's next is chosen, and one more for each that somebody else holds, up to the most. */
-const IN_REACH = 100
-const MOST_IN_REACH = 300
+const IN_REACH = 50
+const MOST_IN_REACH = 400
 
 /** Of the candidates whose next look tells most, those that a look of this grader settles likelier than another's. */
 async function listMostInformative(
@@ -97,7 +97,8 @@ async function listMostInformative(
   const others = await countOthersLeases(transaction, asker)
   const rows = await listNextByValue(transaction, asker, Math.min(IN_REACH + others, MOST_IN_REACH))
   const run = await newestModel(transaction, asker.campaignId)
-  const inReach = rows.map(({ evidence, probability, grades, ...row }) => ({
+  const free = rows.filter(({ heldByOthers, room }) => heldByOthers < room)
+  const inReach = free.map(({ evidence, probability, grades, ...row }) => ({
     ...row,
     evidence: evidence ?? 0,
     probability: probability ?? run?.model.lensShare ?? 0.5,
