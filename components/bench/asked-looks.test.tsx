@@ -53,6 +53,7 @@ describe('in a sitting', () => {
     answer: { grade: 'A', tags: [], remark: '', reason: null },
     view: 'colour',
     seconds: 1,
+    at: 0,
   }
 
   it('a candidate graded before comes again right after the present one, and once answered no more', () => {

@@ -15,7 +15,7 @@ export function BenchHeader({
   candidate: BenchCandidate | null
 }) {
   return (
-    <header className="flex flex-wrap items-center justify-between gap-x-6 px-3 pt-2 md:px-6 md:pt-3">
+    <header className="flex flex-wrap items-center justify-between gap-x-6 px-3 pt-2 md:px-6 md:pt-3 short:flex-nowrap short:gap-x-3 short:px-3 short:pt-0">
       <div className="flex min-w-0 items-center gap-3">
         <Link
           prefetch={false}

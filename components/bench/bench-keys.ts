@@ -1,6 +1,7 @@
 /** What a key means at the bench. Single keys only, never with a modifier, never while typing. */
 import { LIGHT_KEYS, lightCommandOf, type LightCommand } from '@/components/light/light-keys'
 import type { GradeLetter } from '@/db/schema/grading'
+import { translateKey, type KeyChoice } from './key-choice'
 
 export type Command =
   | { do: 'grade'; letter: GradeLetter }
@@ -15,6 +16,9 @@ export type Command =
   | { do: 'keep' }
   | { do: 'blink' }
   | { do: 'help' }
+  | { do: 'settings' }
+  | { do: 'rest' }
+  | { do: 'measure'; tool: 'ruler' | 'circle' }
   | { do: 'light'; light: LightCommand }
 
 /** While a chooser is open digits pick from it; letters mean what they always mean, so no grade goes astray. */
@@ -36,6 +40,10 @@ const LETTERS: Record<string, Command> = {
   k: { do: 'keep' },
   x: { do: 'blink' },
   h: { do: 'help' },
+  ',': { do: 'settings' },
+  e: { do: 'rest' },
+  r: { do: 'measure', tool: 'ruler' },
+  o: { do: 'measure', tool: 'circle' },
   '?': { do: 'help' },
   ' ': { do: 'blink' },
   arrowleft: { do: 'next view', step: -1 },
@@ -88,25 +96,49 @@ function digitOf({ key, code }: Pressed): string | null {
   return /^\d$/.test(key) ? key : (/^Digit(\d)$/.exec(code)?.[1] ?? null)
 }
 
-export function commandOf(event: Pressed, focus: FocusKind, chooser: Chooser): Command | null {
-  if (focus === 'text' || event.isComposing) return null
-  if (focus === 'slider' && SLIDER_KEYS.includes(event.key)) return null
+/** What is pressed, as the key that its action comes with; null for a key that was taken away from its action. */
+function translated(event: Pressed, choice: KeyChoice): Pressed | null {
+  const key = translateKey(choice, event.key)
+  if (key === null) return null
+  if (key === event.key) return event
+  // A sign may need Shift on this layout, and the place of a key no longer tells what it means.
+  return { ...event, key, code: '', shiftKey: event.shiftKey && /^\p{L}$/u.test(event.key) }
+}
+
+function choiceOf(event: Pressed, focus: FocusKind): Command | null {
+  if (event.repeat || event.ctrlKey || event.altKey || event.metaKey || event.shiftKey || focus === 'text') return null
+  const index = CHOICE_KEYS.indexOf((digitOf(event) ?? event.key.toUpperCase()) as (typeof CHOICE_KEYS)[number])
+  return index >= 0 ? { do: 'choose', index } : null
+}
+
+export function commandOf(
+  pressed: Pressed,
+  focus: FocusKind,
+  chooser: Chooser,
+  choice: KeyChoice = {},
+): Command | null {
+  if (focus === 'text' || pressed.isComposing) return null
+  if (focus === 'slider' && SLIDER_KEYS.includes(pressed.key)) return null
+  const picked = chooser ? choiceOf(pressed, focus) : null
+  if (picked) return picked
+  const event = translated(pressed, choice)
+  if (!event) return null
   const light = lightCommandOf(event)
-  if (light && !(chooser && (light === 'reset' || light === 'field'))) return { do: 'light', light }
+  if (light) return { do: 'light', light }
   if (event.repeat) return null
   if (event.ctrlKey || event.altKey || event.metaKey || (event.shiftKey && event.key !== '?')) return null
   if (focus === 'control' && (event.key === ' ' || event.key === 'Enter')) return null
   if (event.key === 'Escape' || event.key === 'Enter') return chooser ? { do: 'close' } : null
   const digit = digitOf(event)
-  if (chooser) {
-    const index = CHOICE_KEYS.indexOf((digit ?? event.key.toUpperCase()) as (typeof CHOICE_KEYS)[number])
-    if (index >= 0) return { do: 'choose', index }
-  }
   if (digit) return digit === '0' ? null : { do: 'view', index: Number(digit) - 1 }
   return LETTERS[event.key.toLowerCase()] ?? null
 }
 
-/** For the help overlay and the README: every key and what it does. */
+/** Whether letting go of this key ends the blinking. */
+export const endsBlink = (key: string, choice: KeyChoice): boolean =>
+  key === ' ' || translateKey(choice, key)?.toLowerCase() === 'x'
+
+/** For the help overlay: every key and what it does. */
 export const KEY_TABLE: { keys: string[]; does: string }[] = [
   { keys: ['A', 'B', 'C', 'N'], does: 'grade: sure, probable, possible, not a lens' },
   { keys: ['U'], does: 'cannot judge this picture' },
@@ -118,6 +150,9 @@ export const KEY_TABLE: { keys: string[]; does: string }[] = [
   { keys: ['M'], does: 'remark: Enter or Esc closes it, Shift+Enter starts a line' },
   { keys: ['Z'], does: 'undo: back to the one graded last, then further' },
   { keys: ['K'], does: 'keep the grade you look back at, and return' },
+  { keys: ['R', 'O'], does: 'ruler, circle: arrows move, Shift by ten pixels, Enter takes the other end, Esc leaves' },
   ...LIGHT_KEYS,
+  { keys: ['E'], does: 'end the sitting: what you did, and a way back' },
+  { keys: [','], does: 'change these keys' },
   { keys: ['H', '?'], does: 'this help' },
 ]

@@ -89,6 +89,6 @@ describe('Light at the bench', () => {
   it('lists its keys in the help', async () => {
     const user = await open()
     await user.keyboard('h')
-    expect(screen.getByRole('dialog')).toHaveTextContent(/light: black, white and softening/)
+    expect(await screen.findByRole('dialog')).toHaveTextContent(/light: black, white and softening/)
   })
 })

@@ -1,22 +1,17 @@
 import Link from 'next/link'
 import { Button } from '@/components/ui/button'
-import type { GradeLetter } from '@/db/schema/grading'
+import { KeyCap } from '@/components/ui/key-cap'
 import type { BenchSession } from './bench-session'
-import { gradeName } from './grade-words'
+import { sittingSentence } from './kindness'
 
-const ORDER: GradeLetter[] = ['A', 'B', 'C', 'N', 'U']
-
-/** `You graded 23 candidates: 2 sure, 21 not a lens.` Nothing to compare oneself with. */
-export function sittingSentence({ given }: BenchSession): string {
-  if (given.length === 0) return ''
-  const parts = ORDER.flatMap((letter) => {
-    const number = given.filter(({ answer }) => answer.grade === letter).length
-    return number > 0 ? [`${number} ${gradeName(letter).toLowerCase()}`] : []
-  })
-  return `In this sitting you graded ${given.length === 1 ? 'one candidate' : `${given.length} candidates`}: ${parts.join(', ')}.`
-}
-
-function wordsOf(session: BenchSession): { title: string; text: string } {
+function wordsOf(session: BenchSession, resting: boolean, waiting: number): { title: string; text: string } {
+  if (resting) {
+    const text =
+      waiting === 0
+        ? 'Everything you graded is saved. Whenever you come back, it goes on where you stopped.'
+        : `${waiting === 1 ? 'One grade is' : `${waiting} grades are`} still on the way to the server and kept in this browser until then.`
+    return { title: 'Thank you for looking', text }
+  }
   const { left } = session.counts
   if (!session.imaged) {
     return {
@@ -48,15 +43,23 @@ export function BenchRest({
   slug,
   session,
   lead,
+  resting,
+  waiting,
+  onGoOn,
   onLookBack,
 }: {
   slug: string
   session: BenchSession
   lead: boolean
+  /** The person has ended the sitting, whatever is left. */
+  resting: boolean
+  /** Grades on their way. */
+  waiting: number
+  onGoOn: () => void
   onLookBack: () => void
 }) {
-  const { title, text } = wordsOf(session)
-  const sitting = sittingSentence(session)
+  const { title, text } = wordsOf(session, resting, waiting)
+  const sitting = sittingSentence(session.given)
   const link =
     'inline-flex min-h-11 items-center text-small underline decoration-line underline-offset-4 hover:decoration-text'
   return (
@@ -66,6 +69,11 @@ export function BenchRest({
         {text ? <p className="text-mute">{text}</p> : null}
         {sitting ? <p className="text-mute">{sitting}</p> : null}
         <div className="flex flex-wrap items-center gap-x-5 gap-y-2">
+          {resting ? (
+            <Button onClick={onGoOn}>
+              <KeyCap>E</KeyCap> Go on grading
+            </Button>
+          ) : null}
           {session.given.length > 0 ? <Button onClick={onLookBack}>Look back at the last one</Button> : null}
           {lead && !session.imaged ? (
             <Link prefetch={false} className={link} href={`/campaigns/${slug}/intake`}>

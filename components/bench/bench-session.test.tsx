@@ -18,6 +18,7 @@ const grade = (letter: GradeLetter, more: { remark?: string } = {}): BenchAction
   answer: { grade: letter, tags: [], remark: more.remark ?? '', reason: null },
   view: 'colour',
   seconds: 2,
+  at: 0,
 })
 const refill = (ids: number[], more: Partial<BenchAction & { type: 'supplied' }> = {}): BenchAction => ({
   type: 'supplied',

@@ -24,6 +24,8 @@ export interface Look {
   /** The view in sight when it was given, and the seconds taken. */
   view: string | null
   seconds: number
+  /** When it was first given, milliseconds since 1970: the order of undo. */
+  at: number
 }
 
 /** 'dry': the server had fewer than asked for, although more is left: it lies on other people's benches. */
@@ -55,7 +57,7 @@ export interface Supplied {
 }
 
 export type BenchAction =
-  | { type: 'graded'; answer: Answer; view: string | null; seconds: number }
+  | { type: 'graded'; answer: Answer; view: string | null; seconds: number; at: number }
   | { type: 'went back' }
   | { type: 'kept' }
   | { type: 'explained'; reason: CannotJudgeReason }
@@ -177,15 +179,16 @@ function without(drafts: Record<number, Draft>, id: number): Record<number, Draf
   return Object.fromEntries(Object.entries(drafts).filter(([key]) => Number(key) !== id))
 }
 
-function graded(session: BenchSession, { answer, view, seconds }: BenchAction & { type: 'graded' }): BenchSession {
+function graded(session: BenchSession, { answer, view, seconds, at }: BenchAction & { type: 'graded' }): BenchSession {
   const look = currentLook(session)
   if (!look) return session
   const candidateId = look.candidate.id
   const drafts = without(session.drafts, candidateId)
   if (look.answer) {
     const same = sameAnswer(look.answer, answer)
-    const anew = { candidate: look.candidate, answer, view, seconds }
-    const given = session.given.map((old) => (old.candidate.id === candidateId ? anew : old))
+    const given = session.given.map((old) =>
+      old.candidate.id === candidateId ? { ...old, answer, view, seconds } : old,
+    )
     const last = { what: same ? ('kept' as const) : ('corrected' as const), candidateId }
     return { ...session, given, drafts, lookingBack: null, last, ...firstView(session.upcoming[0]) }
   }
@@ -194,7 +197,7 @@ function graded(session: BenchSession, { answer, view, seconds }: BenchAction & 
     ...session,
     given: [
       ...session.given.filter((old) => old.candidate.id !== candidateId),
-      { candidate: look.candidate, answer, view, seconds },
+      { candidate: look.candidate, answer, view, seconds, at },
     ],
     upcoming,
     drafts,

@@ -9,22 +9,23 @@ beforeEach(() => void vi.stubGlobal('indexedDB', new IDBFactory()))
 afterEach(() => void vi.unstubAllGlobals())
 
 const ids = async (store: BenchStore) => (await store.grades()).waiting.map(({ body }) => body.id)
-const look = (id: number) => ({
+const look = (id: number, at: number) => ({
   candidate: benchCandidate(id),
   answer: { grade: 'A' as const, tags: [], remark: '', reason: null },
   view: null,
   seconds: 1,
+  at,
 })
 
 it('keeps grades and looks for the next page, and forgets what it is told to', async () => {
   const store = new BenchStore('north:7')
   await store.keepWaiting([waitingGrade(1), waitingGrade(2)])
-  await store.keepLook({ look: look(2), at: 20 })
-  await store.keepLook({ look: look(1), at: 10 })
+  await store.keepLook(look(2, 20))
+  await store.keepLook(look(1, 10))
   await store.close()
   const next = new BenchStore('north:7')
   expect(await ids(next)).toEqual(['uid-1-A', 'uid-2-A'])
-  expect((await next.looks()).map(({ look: { candidate } }) => candidate.id)).toEqual([1, 2])
+  expect((await next.looks()).map(({ candidate }) => candidate.id)).toEqual([1, 2])
   await next.forget('waiting', 'uid-1-A')
   await next.forgetLook(1)
   expect(await ids(next)).toEqual(['uid-2-A'])

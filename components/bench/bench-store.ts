@@ -3,17 +3,10 @@ import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
 import type { Look } from './bench-session'
 import type { RefusedGrade, WaitingGrade } from './grade-outbox'
 
-/** One look of a sitting, for undo. */
-export interface KeptLook {
-  look: Look
-  /** Milliseconds since 1970, when it was first given: the order of undo. */
-  at: number
-}
-
 interface Shape extends DBSchema {
   waiting: { key: [string, string]; value: Scoped<WaitingGrade> }
   refused: { key: [string, string]; value: Scoped<RefusedGrade> }
-  looks: { key: [string, number]; value: KeptLook & { scope: string; candidateId: number } }
+  looks: { key: [string, number]; value: { scope: string; candidateId: number; look: Look } }
 }
 
 type Scoped<T> = T & { scope: string; id: string }
@@ -69,15 +62,15 @@ export class BenchStore {
   }
 
   /** The looks of the sitting, in the order in which they were given. */
-  async looks(): Promise<KeptLook[]> {
+  async looks(): Promise<Look[]> {
     const db = await this.#open()
     const kept = await db.getAll('looks', allOf(this.#scope))
-    return kept.map(({ look, at }) => ({ look, at })).sort((a, b) => a.at - b.at)
+    return kept.map(({ look }) => look).sort((a, b) => a.at - b.at)
   }
 
-  async keepLook(kept: KeptLook): Promise<void> {
+  async keepLook(look: Look): Promise<void> {
     const db = await this.#open()
-    await db.put('looks', { ...kept, scope: this.#scope, candidateId: kept.look.candidate.id })
+    await db.put('looks', { scope: this.#scope, candidateId: look.candidate.id, look })
   }
 
   async forgetLook(candidateId: number): Promise<void> {

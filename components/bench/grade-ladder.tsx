@@ -1,5 +1,7 @@
+import { useContext } from 'react'
 import type { GradeLetter } from '@/db/schema/grading'
 import { KeyCap } from '@/components/ui/key-cap'
+import { KeyNames } from '@/components/ui/key-names'
 import { CANNOT_JUDGE, RUNGS } from './grade-words'
 import { letGo } from './let-go'
 
@@ -11,12 +13,14 @@ export function GradeLadder({
   chosen: GradeLetter | null
   onGrade: (letter: GradeLetter) => void
 }) {
+  const keyName = useContext(KeyNames)
+  const otherKey = (letter: string) => keyName !== null && ![letter, null].includes(keyName(letter))
   return (
     <div role="group" aria-labelledby="bench-question">
-      <h2 id="bench-question" className="mb-2 hidden text-note font-semibold text-mute md:block">
+      <h2 id="bench-question" className="mb-2 hidden text-note font-semibold text-mute md:block short:sr-only">
         How sure are you that this is a lens?
       </h2>
-      <div className="grid grid-cols-5 gap-1.5 md:flex md:flex-col md:gap-0">
+      <div className="grid grid-cols-5 gap-1.5 md:flex md:flex-col md:gap-0 short:grid short:grid-cols-2 short:gap-1.5">
         {RUNGS.map(({ letter, name, means, ink, bar }) => (
           <button
             key={letter}
@@ -24,15 +28,20 @@ export function GradeLadder({
             aria-label={`${letter}: ${name}, ${means}`}
             aria-pressed={chosen === letter}
             onClick={letGo(() => onGrade(letter))}
-            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:text-left md:hover:bg-raise ${
+            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:text-left md:hover:bg-raise short:h-12 short:min-h-12 short:rounded-control short:border ${
               chosen === letter ? 'bg-raise outline outline-lamp md:outline-0' : 'bg-raise/60 md:bg-transparent'
             }`}
           >
             <span className={`text-[1.625rem] font-bold leading-none md:pl-0.5 ${ink}`}>{letter}</span>
             <span>
               <span className="block text-[0.6875rem] leading-tight text-mute md:text-body md:text-text">{name}</span>
-              <span className="hidden text-note text-mute md:block">{means}</span>
+              <span className="hidden text-note text-mute md:block short:hidden">{means}</span>
             </span>
+            {otherKey(letter) ? (
+              <span className="absolute right-4 top-1 hidden md:block">
+                <KeyCap>{letter}</KeyCap>
+              </span>
+            ) : null}
             {chosen === letter ? (
               <span className="absolute right-4 top-1/2 hidden -translate-y-1/2 text-note text-lamp md:block">
                 given
@@ -48,7 +57,7 @@ export function GradeLadder({
           aria-label={`U: ${CANNOT_JUDGE}`}
           aria-pressed={chosen === 'U'}
           onClick={letGo(() => onGrade('U'))}
-          className={`flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 rounded-control border border-line text-mute active:bg-raise md:min-h-11 md:flex-row md:justify-start md:gap-2 md:rounded-none md:border-x-0 md:border-b-0 md:text-small md:hover:text-text ${
+          className={`flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 rounded-control border border-line text-mute active:bg-raise md:min-h-11 md:flex-row md:justify-start md:gap-2 md:rounded-none md:border-x-0 md:border-b-0 md:text-small md:hover:text-text short:col-span-2 short:rounded-control short:border short:justify-center ${
             chosen === 'U' ? 'bg-raise outline outline-lamp md:outline-0' : ''
           }`}
         >

@@ -3,6 +3,7 @@ import { CANNOT_JUDGE_REASONS, type CannotJudgeReason } from '@/lib/work/grading
 import { currentLook, explainable, type BenchSession } from './bench-session'
 import { ChoiceChips } from './choice-chips'
 import { gradeName } from './grade-words'
+import { OFFERS, type BreakOffer } from './kindness'
 import { letGo } from './let-go'
 
 const INK = { A: 'text-letter-a', B: 'text-letter-b', C: 'text-letter-c', N: 'text-letter-n', U: 'text-text' }
@@ -26,7 +27,10 @@ function LineButton({ label, keyName, onPress }: { label: string; keyName: strin
 export function LastLine({
   session,
   hint,
+  offer,
   explaining,
+  onRest,
+  onDecline,
   onUndo,
   onKeep,
   onExplain,
@@ -35,7 +39,11 @@ export function LastLine({
   session: BenchSession
   /** Said instead, such as why a key did nothing. */
   hint: string | null
+  /** A break is offered in place of what was given; grading goes on all the same. */
+  offer: BreakOffer | null
   explaining: boolean
+  onRest: () => void
+  onDecline: () => void
   onUndo: () => void
   onKeep: () => void
   onExplain: () => void
@@ -45,9 +53,18 @@ export function LastLine({
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
   const unclear = explainable(session)
   return (
-    <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-10">
+    <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-10 short:min-h-11 short:min-w-0 short:flex-1">
       {hint ? (
         <span className="text-text">{hint}</span>
+      ) : offer && session.lookingBack === null && !explaining ? (
+        <>
+          <span role="status" className="text-text">
+            {OFFERS[offer]}
+          </span>
+          <LineButton label="end the sitting" keyName="E" onPress={onRest} />
+          <LineButton label="not now" keyName="Esc" onPress={onDecline} />
+          <LineButton label="undo" keyName="Z" onPress={onUndo} />
+        </>
       ) : session.lookingBack !== null && look?.answer ? (
         <>
           <span>

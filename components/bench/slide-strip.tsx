@@ -16,7 +16,7 @@ export function SlideStrip({
     <div
       role="group"
       aria-label="Views"
-      className="flex snap-x gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pb-4"
+      className="flex snap-x gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pb-4 short:flex-col short:overflow-x-hidden short:overflow-y-auto short:px-3 short:pb-2"
     >
       {views.map(({ key, label, url, width, height, note }, index) => (
         <button
@@ -26,7 +26,7 @@ export function SlideStrip({
           aria-pressed={key === shown}
           title={note ?? undefined}
           onClick={letGo(() => onChoose(key))}
-          className="group w-16 shrink-0 snap-start touch-manipulation text-left text-note text-mute aria-pressed:text-text md:w-[clamp(3.5rem,9.5vh,5.25rem)]"
+          className="group w-16 shrink-0 snap-start touch-manipulation text-left text-note text-mute aria-pressed:text-text md:w-[clamp(3.5rem,9.5vh,5.25rem)] short:w-14"
         >
           <span className="block aspect-square overflow-hidden rounded-key border border-line bg-black outline-2 outline-offset-2 outline-transparent group-aria-pressed:outline-text">
             {url ? (

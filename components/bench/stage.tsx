@@ -2,8 +2,13 @@ import { useState, type CSSProperties, type ReactNode } from 'react'
 import type { LightStore } from '@/components/light/light-store'
 import { LitBox } from '@/components/light/lit-box'
 import { Button } from '@/components/ui/button'
+import { closeFactor } from '@/lib/science/imaging/close-field'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
+import { useClose } from '@/components/light/use-light'
+import { MeasureLayer } from './measure-layer'
+import type { Tool } from './measuring'
 import { useHoldAndSwipe } from './use-hold-and-swipe'
+import { useMeasuring } from './use-measuring'
 
 /** Small pictures grow in whole steps of their pixels, larger ones in halves and quarters, so that pixels stay even. */
 function growthStep(longerSide: number): number {
@@ -21,6 +26,8 @@ export function Stage({
   candidate,
   shown,
   light,
+  tool,
+  onLeaveTool,
   onSeen,
   onBlink,
   onSweep,
@@ -28,6 +35,9 @@ export function Stage({
   candidate: BenchCandidate
   shown: string | null
   light: LightStore
+  /** Ruler or circle, in use over the picture. */
+  tool: Tool | null
+  onLeaveTool: () => void
   /** A picture of this candidate is in sight. */
   onSeen: (candidateId: number) => void
   onBlink: (on: boolean) => void
@@ -38,10 +48,19 @@ export function Stage({
   const hold = useHoldAndSwipe(onBlink, onSweep)
   const view = candidate.views.find(({ key }) => key === shown) ?? candidate.views[0]
   const longest = Math.max(1, ...candidate.views.map(({ width, height }) => Math.max(width, height)))
+  const side = Math.max(1, view?.width ?? 0, view?.height ?? 0)
+  const scale = view?.geometry.pixelScaleArcsec ?? null
+  const closer = useClose(light) ? closeFactor(side, scale, candidate.closeFieldArcsec) : 1
+  const { measuring, reading, pointer } = useMeasuring({
+    tool,
+    picture: { side, geometry: view?.geometry ?? candidate.geometry, raDeg: candidate.raDeg, decDeg: candidate.decDeg },
+    shown: () => closer * light.zoom.scale,
+    onLeave: onLeaveTool,
+  })
   const missing = view?.url ? broken.includes(view.url) : false
   return (
-    <figure className="flex min-h-0 flex-1 flex-col">
-      <div className="grid min-h-0 flex-1 place-items-center px-2 [container-type:size] md:px-6">
+    <figure className="flex min-h-0 min-w-0 flex-1 flex-col">
+      <div className="grid min-h-0 flex-1 place-items-center px-2 [container-type:size] md:px-6 short:px-1">
         <div
           {...hold}
           className="relative aspect-square w-[min(100cqw,100cqh)] [--step:var(--whole)] [@media(min-resolution:2dppx)]:[--step:calc(var(--whole)/2)] select-none overflow-hidden bg-black [-webkit-touch-callout:none]"
@@ -77,6 +96,9 @@ export function Stage({
               ) : null,
             )}
           </LitBox>
+          {tool && measuring ? (
+            <MeasureLayer tool={tool} measuring={measuring} pointer={pointer} light={light} closer={closer} />
+          ) : null}
           {view?.url ? null : <Absent>There is no picture of this view.</Absent>}
           {missing ? (
             <Absent>
@@ -94,10 +116,16 @@ export function Stage({
         </div>
       </div>
       {/* Room for two lines always, so that the picture keeps its size whatever there is to know of it. */}
-      <figcaption className="flex h-9 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
-        <span className="line-clamp-2" title={view?.note ?? undefined}>
-          {view?.note ?? ''}
-        </span>
+      <figcaption className="flex h-9 shrink-0 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
+        {reading ? (
+          <span role="status" className="figures line-clamp-2 text-text">
+            {reading}
+          </span>
+        ) : (
+          <span className="line-clamp-2" title={view?.note ?? undefined}>
+            {view?.note ?? ''}
+          </span>
+        )}
       </figcaption>
     </figure>
   )

@@ -16,6 +16,8 @@ import {
   type Look,
 } from './bench-session'
 import { makeUid } from './make-uid'
+import type { Tool } from './measuring'
+import { useBreakOffer } from './use-break-offer'
 import { REMARK_ID } from './remark-box'
 import { firstsIn } from './grade-outbox'
 import { useOutbox } from './use-outbox'
@@ -35,14 +37,16 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const [session, dispatch] = useReducer(reduceSession, first, openSession)
   const [chooser, setChooser] = useState<Chooser>(null)
   const [remarkOpen, setRemarkOpen] = useState(false)
-  const [helpOpen, setHelpOpen] = useState(false)
+  const [sheet, setSheet] = useState<'help' | 'settings' | null>(null)
+  const [tool, setTool] = useState<Tool | null>(null)
+  const [resting, setResting] = useState(false)
   const [blinking, setBlinking] = useState(false)
   const [hint, setHint] = useState<string | null>(null)
   const seen = useRef(new Set<number>())
   const broughtAt = useRef(0)
   const wroteAt = useRef(-Infinity)
 
-  const look = currentLook(session)
+  const look = resting ? null : currentLook(session)
   const candidateId = look?.candidate.id ?? null
   const recall = useRef<() => Promise<void>>(null)
   const { outbox, snapshot, latest } = useOutbox(slug, personId, {
@@ -73,6 +77,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   }, [recallSitting])
   usePreloaded(session.upcoming)
   const seconds = useVisibleSeconds(candidateId)
+  const { offer, decline } = useBreakOffer(session.given)
 
   useEffect(() => {
     broughtAt.current = performance.now()
@@ -124,7 +129,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     const reason = letter === 'U' ? (before?.reason ?? null) : null
     const { tags, remark } = currentDraft(session)
     const given: Answer = { tags, remark, grade: letter, reason }
-    const spent = { view: session.view, seconds: seconds() }
+    const spent = { view: session.view, seconds: seconds(), at: Date.now() }
     if (!before || !sameAnswer(before, given)) send({ candidate, answer: given, ...spent }, before)
     dispatch({ type: 'graded', answer: given, ...spent })
     settle()
@@ -134,7 +139,14 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     setChooser(null)
     setRemarkOpen(false)
     setBlinking(false)
+    setTool(null)
+    setResting(false)
     setHint(null)
+  }
+
+  function rest(): void {
+    settle()
+    setResting(!resting)
   }
 
   function explain(reason: CannotJudgeReason): void {
@@ -169,8 +181,8 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   }
 
   function run(command: Command): void {
-    if (command.do === 'help') return setHelpOpen(!helpOpen)
-    if (helpOpen) return
+    if (command.do === 'help' || command.do === 'settings') return setSheet(sheet ? null : command.do)
+    if (sheet) return
     switch (command.do) {
       case 'grade':
         return grade(command.letter)
@@ -178,6 +190,10 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
         return undo()
       case 'keep':
         return keep()
+      case 'rest':
+        return rest()
+      case 'measure':
+        return setTool(tool === command.tool || !look ? null : command.tool)
       case 'close':
         return setChooser(null)
       case 'tags':
@@ -210,12 +226,17 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     shownView: blinking ? (session.previousView ?? session.view) : session.view,
     chooser,
     remarkOpen,
-    helpOpen,
+    sheet,
+    tool,
+    resting,
+    offer: resting ? null : offer,
+    declineBreak: decline,
     hint,
     snapshot,
     run,
     explain,
-    setHelpOpen,
+    setSheet,
+    leaveTool: () => setTool(null),
     setBlinking,
     closeRemark: () => {
       wroteAt.current = performance.now()

@@ -41,7 +41,6 @@ export function useSitting({
   const scope = `${slug}:${personId}`
   const store = useRef<BenchStore>(null)
   const kept = useRef<Look[]>([])
-  const times = useRef(new Map<number, number>())
   const unchecked = useRef(new Set<number>())
   const drafts = useRef(session.drafts)
 
@@ -56,11 +55,8 @@ export function useSitting({
     const found = (await store.current?.looks().catch(() => [])) ?? []
     const fresh = now - (found.at(-1)?.at ?? now) <= SITTING_MS
     if (!fresh) await store.current?.forgetLooks().catch(() => {})
-    const looks = fresh ? found.map(({ look }) => look) : []
-    for (const { look, at } of fresh ? found : []) {
-      times.current.set(look.candidate.id, at)
-      unchecked.current.add(look.candidate.id)
-    }
+    const looks = fresh ? found : []
+    for (const look of looks) unchecked.current.add(look.candidate.id)
     kept.current = [...looks, ...kept.current]
     drafts.current = { ...written, ...drafts.current }
     if (looks.length > 0 || Object.keys(written).length > 0) dispatch({ type: 'recalled', looks, drafts: written })
@@ -72,16 +68,10 @@ export function useSitting({
     kept.current = given
     for (const look of given) {
       const { id } = look.candidate
-      if (before.get(id) !== look) {
-        if (!times.current.has(id)) times.current.set(id, Date.now())
-        void store.current?.keepLook({ look, at: times.current.get(id) ?? 0 }).catch(() => {})
-      }
+      if (before.get(id) !== look) void store.current?.keepLook(look).catch(() => {})
       before.delete(id)
     }
-    for (const id of before.keys()) {
-      times.current.delete(id)
-      void store.current?.forgetLook(id).catch(() => {})
-    }
+    for (const id of before.keys()) void store.current?.forgetLook(id).catch(() => {})
   }, [given])
 
   useEffect(() => {
