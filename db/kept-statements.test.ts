@@ -15,6 +15,15 @@ it('compiles a statement once, however often it is run, with other values each t
   expect(prepare).toHaveBeenCalledTimes(1)
 })
 
+it('compiles a pragma each time, which is when it does its work', () => {
+  const { kept, prepare, sqlite } = open()
+  for (const set of [0, 1, 0]) {
+    kept.prepare(`pragma foreign_keys = ${set}`).run([])
+    expect(sqlite.pragma('foreign_keys', { simple: true })).toBe(set)
+  }
+  expect(prepare).toHaveBeenCalledTimes(3)
+})
+
 it('gives the columns of a table as it is now, also after it changed', () => {
   const { kept } = open()
   const all = () => kept.prepare('select * from place').all([])

@@ -5,6 +5,9 @@ const MOST_KEPT = 400
 /** Longer ones are lists of rows, hardly any of which comes twice. */
 const LONGEST_KEPT = 6000
 
+/** A pragma does its work while it is compiled, so that it is compiled each time; changes of the schema come once. */
+const KEPT = /^\s*(select|with|insert|update|delete|begin|commit|rollback)\b/i
+
 type Statement = ReturnType<SqliteDatabase['prepare']>
 
 /**
@@ -23,7 +26,7 @@ export function keepStatements(sqlite: SQLite.Database): SqliteDatabase {
       const known = kept.get(sql)
       if (known) kept.delete(sql)
       const statement = known ?? (sqlite.prepare(sql) as unknown as Statement)
-      if (sql.length <= LONGEST_KEPT) kept.set(sql, statement)
+      if (sql.length <= LONGEST_KEPT && KEPT.test(sql)) kept.set(sql, statement)
       if (kept.size > MOST_KEPT) kept.delete(kept.keys().next().value as string)
       return statement
     },
