@@ -4,6 +4,9 @@ import { FitsError, type FitsHeader } from '@/lib/science/fits/fits-types'
 import { BLOCK_BYTES, readHeader } from '@/lib/science/fits/read-header'
 import { refuseForeignFormat } from '@/lib/science/fits/foreign-format'
 
+/** Common practice, no source: a camera of a hundred chips with weights and masks has 300. */
+const MOST_UNITS = 1024
+
 export interface Unit {
   hdu: number
   header: FitsHeader
@@ -72,6 +75,8 @@ export function findUnits(bytes: Uint8Array, check: (unit: Unit) => void): Unit[
   const units: Unit[] = []
   let start = 0
   do {
+    if (units.length === MOST_UNITS)
+      throw new FitsError('too-large', `The file has more than the ${MOST_UNITS} HDUs that are allowed for one file.`)
     const unit = unitAt(bytes, start, units.length)
     check(unit)
     const present = Math.max(0, bytes.length - unit.dataStart)
@@ -82,17 +87,21 @@ export function findUnits(bytes: Uint8Array, check: (unit: Unit) => void): Unit[
       )
     }
     units.push(unit)
-    start = unit.dataStart + Math.ceil(unit.dataBytes / BLOCK_BYTES) * BLOCK_BYTES
+    start = unitEnd(unit)
   } while (beginsExtension(bytes, start))
   return units
 }
+
+/** Where the next unit begins, if there is one. */
+export const unitEnd = ({ dataStart, dataBytes }: Unit): number =>
+  dataStart + Math.ceil(dataBytes / BLOCK_BYTES) * BLOCK_BYTES
 
 function promised(unit: Unit): string {
   return `${unit.axes.join(' x ')} values of ${Math.abs(unit.bitpix)} bits`
 }
 
 /** Anything else after the last unit is special records or padding, which section 3.5 lets a reader pass over. */
-function beginsExtension(bytes: Uint8Array, start: number): boolean {
+export function beginsExtension(bytes: Uint8Array, start: number): boolean {
   const word = 'XTENSION'
   return (
     start + word.length <= bytes.length &&

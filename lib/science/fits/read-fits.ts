@@ -8,9 +8,9 @@ import {
   type FitsImage,
   type FitsLimits,
 } from '@/lib/science/fits/fits-types'
-import { findUnits, unitAt, type Unit } from '@/lib/science/fits/find-units'
-import { refuseForeignFormat } from '@/lib/science/fits/foreign-format'
-import { gunzipFile, isGzip, peekGzip } from '@/lib/science/fits/gunzip'
+import { findUnits, type Unit } from '@/lib/science/fits/find-units'
+import { gunzipSmall, isGzip } from '@/lib/science/fits/gunzip'
+import { gunzipStepwise } from '@/lib/science/fits/gunzip-stepwise'
 import { axisLengths } from '@/lib/science/fits/header-values'
 import { readTiledImage } from '@/lib/science/fits/tiles/read-tiled-image'
 
@@ -22,18 +22,14 @@ const MAX_PLANES = 1024
  * (told by its first bytes). Rejects with FitsError and with nothing else; the bytes are not changed.
  */
 export async function readFits(bytes: Uint8Array, limits: FitsLimits = DEFAULT_FITS_LIMITS): Promise<FitsFile> {
-  const plain = isGzip(bytes) ? unpack(bytes, limits) : bytes
+  const plain = isGzip(bytes) ? await unpack(bytes, limits) : bytes
   if (plain.length > limits.maxBytes) {
     throw new FitsError(
       'too-large',
       `The file has ${plain.length} bytes; at most ${limits.maxBytes} are allowed for one file.`,
     )
   }
-  let pixels = 0
-  const units = findUnits(plain, (unit) => {
-    pixels += pixelCount(unit)
-    refuseTooManyPixels(unit, pixels, limits)
-  })
+  const units = findUnits(plain, pixelGuard(limits))
   const images: FitsImage[] = []
   for (const unit of units) {
     if (pixelCount(unit) > 0)
@@ -44,24 +40,21 @@ export async function readFits(bytes: Uint8Array, limits: FitsLimits = DEFAULT_F
   return { primary: units[0].header, images }
 }
 
-function unpack(bytes: Uint8Array, limits: FitsLimits): Uint8Array {
-  const beginning = peekGzip(bytes)
-  if (beginning !== null && beginning.length >= 80) {
-    refuseForeignFormat(beginning)
-    refuseTooLargePrimary(beginning, limits)
-  }
-  return gunzipFile(bytes, limits.maxBytes)
+/** Nearly every cutout is smaller than this, and unpacked in one go; a larger file is looked at while it is unpacked. */
+const SMALL_BYTES = 4 * 1024 * 1024
+
+async function unpack(bytes: Uint8Array, limits: FitsLimits): Promise<Uint8Array> {
+  const small = gunzipSmall(bytes, Math.min(SMALL_BYTES, limits.maxBytes))
+  return small ?? gunzipStepwise(bytes, limits.maxBytes, pixelGuard(limits))
 }
 
-/** Looks only at whether the first image is within limits: any other fault is named when the whole is unpacked. */
-function refuseTooLargePrimary(beginning: Uint8Array, limits: FitsLimits): void {
-  let unit: Unit
-  try {
-    unit = unitAt(beginning, 0, 0)
-  } catch {
-    return
+/** Refuses the unit with which the pixels of a file become too many. */
+function pixelGuard(limits: FitsLimits): (unit: Unit) => void {
+  let pixels = 0
+  return (unit) => {
+    pixels += pixelCount(unit)
+    refuseTooManyPixels(unit, pixels, limits)
   }
-  refuseTooManyPixels(unit, pixelCount(unit), limits)
 }
 
 /** Pixels that would be handed over: none of tables and of arrays with fewer than two axes. */

@@ -6,6 +6,7 @@ import { groupBy } from '@/lib/work/intake/group-by'
 import { keepManifest } from '@/lib/work/intake/read-manifest'
 import { campaignWork, type CampaignWork, type ImagingTools } from './campaign-work'
 import { joinRefused } from './join-refused'
+import { inLanes } from './in-lanes'
 import { matchByHeader, matchPage, type UnmatchedFile } from './match-waiting'
 import { planImaging } from './plan-imaging'
 import { runImaging } from './run-imaging'
@@ -14,7 +15,9 @@ import { WaitingCandidates, type MatchedFile } from './waiting-candidates'
 const FILES_PER_PAGE = 3000
 const LOOK_AGAIN_MS = 250
 /** So many candidates are imaged before it is asked again whether their batch goes on. */
-const GROUPS_PER_LOOK = 128
+const GROUPS_PER_LOOK = 64
+/** While the last of one part are drawn and committed, the next keeps the threads at work. */
+const PARTS_AT_ONCE = 2
 /** A file that shows its bands only when it is opened waits this long at most while more files keep coming. */
 const LONGEST_WAIT_MS = 20_000
 
@@ -110,7 +113,8 @@ class Reading {
   }
 
   async #image(work: CampaignWork, groups: MatchedFile[][]): Promise<void> {
-    for (let start = 0; start < groups.length; start += GROUPS_PER_LOOK) {
+    const starts = Array.from({ length: Math.ceil(groups.length / GROUPS_PER_LOOK) }, (_, k) => k * GROUPS_PER_LOOK)
+    await inLanes(PARTS_AT_ONCE, starts, async (start) => {
       const part = groups.slice(start, start + GROUPS_PER_LOOK)
       // A batch may have been paused or cancelled meanwhile. What is left of a group is found again by the next look.
       const ids = part.flatMap((group) => group.map(({ file }) => file.id))
@@ -118,7 +122,7 @@ class Reading {
       const standing = part.filter((group) => group.every(({ file }) => readable.has(file.id)))
       const planned = await planImaging(this.tools, work, await joinRefused(this.tools, work, standing))
       await runImaging(this.tools, work, planned, (files) => this.#tell(files))
-    }
+    })
   }
 
   async #readManifests(): Promise<boolean> {
