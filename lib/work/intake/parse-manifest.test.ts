@@ -45,6 +45,21 @@ describe('a manifest', () => {
     expect(problems[3]).toMatch(/^Line 3: it has a right ascension without a declination/)
   })
 
+  it('takes decimal commas where columns are parted by semicolons', () => {
+    const { entries, problems } = parse('\ufeffname;ra;dec;score\r\nSWS1;10,5;-3,25;0,75\r\n')
+    expect(problems).toEqual([])
+    expect(entries).toMatchObject([{ candidate: 'SWS1', raDeg: 10.5, decDeg: -3.25, score: 0.75 }])
+  })
+
+  it.each([
+    ['holds control characters', 'SWS\u00001'],
+    ['has 201 characters', 'S'.repeat(201)],
+  ])('leaves out a line whose name %s, and says so', (why, name) => {
+    const { entries, problems } = parse(`name,score\n${name},0.5\nSWS2,0.6\n`)
+    expect(entries.map(({ candidate }) => candidate)).toEqual(['SWS2'])
+    expect(problems).toEqual([`Line 2: the name of the candidate ${why}, so that nothing is taken from it.`])
+  })
+
   it('names a line that has neither file nor candidate', () => {
     const { entries, problems } = parse('name,score\n,0.5\nSWS1,0.6\n')
     expect(entries.map(({ candidate }) => candidate)).toEqual(['SWS1'])
@@ -56,6 +71,10 @@ describe('a manifest', () => {
     expect(entries).toEqual([])
     expect(refusal?.fault).toBe('no-columns')
     expect(refusal?.reason).toContain('alpha, delta')
+  })
+
+  it('is refused with its headers cut short where these are whole lines of something else', () => {
+    expect(parse(`${'SIMPLE = T '.repeat(50)}\n1\n`).refusal?.reason).toMatch(/it has SIMPLE = T .{20,40}…/)
   })
 
   it('is refused when it is empty', () => {

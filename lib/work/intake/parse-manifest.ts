@@ -42,7 +42,8 @@ export function parseManifest(bytes: Uint8Array, chosen: ChosenColumns = {}): Pa
 export function parseManifestTable(table: CsvTable, columns: ManifestHeaders): ParsedManifest {
   const problems = table.problems.map(({ line, message }) => (line === null ? message : `Line ${line}: ${message}`))
   if (columns.file === undefined && columns.candidate === undefined) {
-    const found = table.header.length > 0 ? `it has ${table.header.slice(0, 12).join(', ')}` : 'it has none'
+    const shown = table.header.slice(0, 12).map((name) => (name.length > 40 ? `${name.slice(0, 40).trim()}…` : name))
+    const found = shown.length > 0 ? `it has ${shown.join(', ')}` : 'it has none'
     const reason = `A manifest needs a column 'file' or 'candidate' in its first line, and ${found}. It may also have band, ra, dec, pixel_scale, score, lens_redshift and source_redshift.`
     return { entries: [], problems, refusal: { fault: 'no-columns', reason } }
   }
@@ -56,18 +57,24 @@ function entryOf(
   columns: ManifestHeaders,
   problems: string[],
 ): ManifestEntry | null {
+  const fault = (sentence: string) => void problems.push(`Line ${line}: ${sentence}`)
   const fileName = cell(values, columns.file)
   const candidate = cell(values, columns.candidate)
   if (fileName === null && candidate === null) {
-    problems.push(`Line ${line}: neither a file nor a candidate is named, so that nothing is taken from it.`)
+    fault('neither a file nor a candidate is named, so that nothing is taken from it.')
     return null
   }
-  const fault = (sentence: string) => void problems.push(`Line ${line}: ${sentence}`)
+  const why =
+    noName('file', fileName, MOST_PATH_CHARACTERS) ?? noName('candidate', candidate, MOST_CANDIDATE_CHARACTERS)
+  if (why !== null) {
+    fault(`${why}, so that nothing is taken from it.`)
+    return null
+  }
   const position = positionOf(cell(values, columns.ra), cell(values, columns.dec), fault)
   const number = (column: ManifestColumn, allowed: (value: number) => boolean, rule: string) => {
     const text = cell(values, columns[column])
     if (text === null) return null
-    const value = Number(text)
+    const value = Number(withPoint(text))
     if (Number.isFinite(value) && allowed(value)) return value
     fault(`${columns[column]} is '${text}'; ${rule}.`)
     return null
@@ -76,7 +83,7 @@ function entryOf(
     line,
     fileName: fileName?.replaceAll('\\', '/').replace(/^(\.?\/)+/, '') ?? null,
     fileBase: fileName === null ? null : baseName(fileName.replaceAll('\\', '/')),
-    candidate: candidate?.slice(0, 200) ?? null,
+    candidate,
     band: cell(values, columns.band),
     ...position,
     pixelScaleArcsec: number(
@@ -94,6 +101,22 @@ function entryOf(
   }
 }
 
+const MOST_CANDIDATE_CHARACTERS = 200
+/** Of the computer on which the manifest was made. */
+const MOST_PATH_CHARACTERS = 2000
+
+/** Why a name cannot be one. Cut off or cleaned, two names might become one candidate. */
+function noName(what: string, text: string | null, most: number): string | null {
+  if (text === null) return null
+  if (text.length > most) return `the name of the ${what} has ${text.length.toLocaleString('en')} characters`
+  return /[\u0000-\u001f\u007f-\u009f\u2028\u2029]/.test(text)
+    ? `the name of the ${what} holds control characters`
+    : null
+}
+
+/** `10,5` is 10.5 where tables part their columns by semicolons; a number with thousands set off has more commas or a point. */
+const withPoint = (text: string): string => (/^[+-]?\d+,\d+$/.test(text) ? text.replace(',', '.') : text)
+
 /** Both or none: half a position is no position. */
 function positionOf(
   ra: string | null,
@@ -109,7 +132,7 @@ function positionOf(
     return none
   }
   try {
-    return { raDeg: parseRightAscension(ra), decDeg: parseDeclination(dec) }
+    return { raDeg: parseRightAscension(withPoint(ra)), decDeg: parseDeclination(withPoint(dec)) }
   } catch (error) {
     fault(error instanceof Error ? error.message : String(error))
     return none

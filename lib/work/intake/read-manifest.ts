@@ -66,7 +66,7 @@ function problemOfLine(text: string): NewFileProblem {
 }
 
 function manifestReason(lines: number, problems: readonly NewFileProblem[]): string {
-  const counted = `${lines} ${lines === 1 ? 'line' : 'lines'} taken.`
+  const counted = `${lines === 0 ? 'No' : lines.toLocaleString('en')} ${lines === 1 ? 'line' : 'lines'} taken.`
   if (problems.length === 0) return counted
   const told = problems
     .slice(0, PROBLEMS_TOLD)

@@ -4,7 +4,7 @@ export type IntakeFault =
 
 /** Why an archive, or some of it, is not taken. */
 export type ArchiveFault =
-  'not-an-archive' | 'unsafe-archive' | 'encrypted-archive' | 'archive-bomb' | 'damaged-archive'
+  'not-an-archive' | 'empty-archive' | 'unsafe-archive' | 'encrypted-archive' | 'archive-bomb' | 'damaged-archive'
 
 /** Faults that another manifest or another name pattern may cure. */
 export const CURABLE_FAULTS: readonly string[] = ['no-band', 'no-candidate', 'band-taken'] satisfies IntakeFault[]

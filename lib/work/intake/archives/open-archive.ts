@@ -17,6 +17,7 @@ export async function openArchive(
   bytes: number,
   limits: ArchiveLimits,
 ): Promise<OpenedArchive> {
+  if (bytes === 0) return { refusal: { fault: 'empty', reason: 'The file is empty (0 bytes).' } }
   const head = await readHead(path)
   const magic = head.subarray(0, 4).toString('latin1')
   if (magic === 'PK\u0003\u0004' || magic === 'PK\u0005\u0006') return openZip(path, bytes, limits)

@@ -39,7 +39,13 @@ export function cutZipReader(path: string, fileBytes: number, limits: ArchiveLim
         last = member.name
         if (!member.name.endsWith('/')) yield { name: member.name, chunks: bytesOf(path, member) }
       }
-      yield { lost: `The archive is cut off: what came after '${last}' is lost.`, rest: true }
+      yield {
+        lost:
+          last === ''
+            ? 'The archive is cut off or damaged, and none of its files can be found whole. Send it again.'
+            : `The archive is cut off: what came after '${last}' is lost.`,
+        rest: true,
+      }
     },
   }
 }

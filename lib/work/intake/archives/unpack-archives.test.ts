@@ -148,7 +148,16 @@ describe('an archive that is refused', () => {
       /which is a device/,
     ],
     ['not-an-archive', 'is none', async () => text('<html>Please log in</html>'), /no ZIP and no tar/],
-    ['not-an-archive', 'is empty', async () => new Uint8Array(), /no ZIP and no tar/],
+    ['empty', 'is empty', async () => new Uint8Array(), /empty \(0 bytes\)/],
+    ['empty-archive', 'is a zip of nothing', async () => packZip([]), /holds not one/],
+    ['empty-archive', 'is a tar.gz of nothing', () => packTar([], { gzip: true }), /holds not one/],
+    ['empty-archive', 'has hidden files only', async () => packZip([cutout('__MACOSX/._x', 1)]), /only hidden ones/],
+    [
+      'damaged-archive',
+      'is cut off in its first file',
+      async () => packZip(threeBands).subarray(0, 200),
+      /none of its files can be found whole/,
+    ],
   ]
   it.each(refused)(
     'as %s because it %s says so, and nothing of it is taken or written',

@@ -137,7 +137,11 @@ class Unpacking {
     const told = this.#problems.slice(0, PROBLEMS_TOLD).map(({ sentence }) => sentence)
     const more = this.#problems.length - told.length
     const reason = [`${taken}${hidden}.`, ...told, ...(more > 0 ? [`And ${more} more problems.`] : [])].join(' ')
-    const isRefused = this.#isDamaged || (this.#taken === 0 && this.#problems.length > 0)
+    if (this.#taken === 0 && this.#problems.length === 0) {
+      const only = this.#hidden > 0 ? 'only hidden ones that operating systems put there' : 'not one'
+      return this.#refuse({ fault: 'empty-archive', reason: `The archive should hold files, and holds ${only}.` })
+    }
+    const isRefused = this.#isDamaged || this.#taken === 0
     await this.#settle(
       isRefused ? { fate: 'refused', fault: 'damaged-archive', reason } : { fate: 'read', fault: null, reason },
     )
