@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { PageHead } from '@/components/campaigns/page-head'
 import type { CampaignPeople } from '@/lib/work/people/list-people'
@@ -9,6 +10,7 @@ import type { FormAction } from './use-kept-form'
 /** Who is in the campaign, who is asked to be, and the form that asks. */
 export function PeopleView({
   people,
+  asked,
   ownId,
   invite,
   sendAgain,
@@ -17,6 +19,8 @@ export function PeopleView({
   endMembership,
 }: {
   people: CampaignPeople
+  /** Looks that wait for their answer. */
+  asked: ReactNode
   ownId: number
   invite: FormAction
   sendAgain: (invitationId: number) => FormAction
@@ -35,6 +39,7 @@ export function PeopleView({
       <div className="grid gap-x-12 gap-y-10 xl:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-10">
           <MemberTable members={members} ownId={ownId} changeRole={changeRole} endMembership={endMembership} />
+          {asked}
           <section className="flex flex-col gap-2" aria-labelledby="open-invitations">
             <h2 id="open-invitations" className="text-title font-semibold">
               {invitations.length

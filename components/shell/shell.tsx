@@ -6,6 +6,7 @@ import type { CountSource } from './live-count'
 import { NavLink } from './nav-link'
 import { SignOutButton } from './sign-out-button'
 import { ThemeSwitch } from './theme-switch'
+import { WaitingLine, type WaitingSource } from './waiting-line'
 
 export interface ShellLink {
   href: string
@@ -19,11 +20,13 @@ export function Shell({
   viewerName,
   heading,
   links,
+  waiting,
   children,
 }: {
   viewerName: string
   heading?: string
   links: ShellLink[]
+  waiting?: WaitingSource
   children: ReactNode
 }) {
   return (
@@ -58,6 +61,7 @@ export function Shell({
             <NavLink key={link.href} {...link} />
           ))}
         </nav>
+        {waiting ? <WaitingLine {...waiting} /> : null}
         <div className="mt-auto hidden items-center justify-between gap-2 pl-3 pt-4 md:flex">
           <Link
             href="/account"

@@ -1,6 +1,7 @@
 import { permitPage } from '@/app/_lib/page-permit'
 import { Shell, type ShellLink } from '@/components/shell/shell'
 import { campaignCounts } from '@/lib/work/campaigns/campaign-counts'
+import { waitingFor } from '@/lib/work/discussion/list-mentions'
 
 /** The places of one campaign. What each page shows is checked by the page itself: layouts do not run again on navigation. */
 export default async function CampaignLayout({ params, children }: LayoutProps<'/campaigns/[slug]'>) {
@@ -33,7 +34,12 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
       : []),
   ]
   return (
-    <Shell viewerName={`${permit.viewer.name}, ${permit.role}`} heading={permit.campaign.name} links={links}>
+    <Shell
+      viewerName={`${permit.viewer.name}, ${permit.role}`}
+      heading={permit.campaign.name}
+      links={links}
+      waiting={{ home, url: `/api/campaigns/${slug}/waiting`, initial: await waitingFor(db, permit) }}
+    >
       {children}
     </Shell>
   )
