@@ -117,16 +117,21 @@ export async function replaceStamps(
     .execute()
 }
 
-/** The candidate of a stamp of this campaign, or null where the campaign has no such stamp. */
-export async function findCandidateOfStamp(db: Kysely<DB>, campaignId: number, sha256: string): Promise<number | null> {
+/** Whose stamp of this campaign it is and by which recipe, the newest where several made it; null where there is none. */
+export async function findOriginOfStamp(
+  db: Kysely<DB>,
+  campaignId: number,
+  sha256: string,
+): Promise<{ candidateId: number; recipeId: number } | null> {
   const row = await db
     .selectFrom('stamp')
-    .select('candidate_id')
+    .select(['candidate_id as candidateId', 'recipe_id as recipeId'])
     .where('campaign_id', '=', campaignId)
     .where('sha256', '=', sha256)
+    .orderBy('recipe_id', 'desc')
     .limit(1)
     .executeTakeFirst()
-  return row?.candidate_id ?? null
+  return row ?? null
 }
 
 /** Names of candidates that have planes but no stamps of this recipe, by key. */

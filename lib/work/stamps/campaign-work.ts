@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { requireRecipe } from '@/db/queries/campaigns'
+import { listRecipesById } from '@/db/queries/recipes'
 import { findCampaignById } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
 import { fromJson } from '@/db/schema/values'
@@ -32,10 +33,15 @@ export interface CampaignWork {
   recipe: Recipe
 }
 
-export async function campaignWork(db: Kysely<DB>, campaignId: number): Promise<CampaignWork> {
+/** @param recipeId of the campaign; left out: the one in force. */
+export async function campaignWork(db: Kysely<DB>, campaignId: number, recipeId?: number): Promise<CampaignWork> {
   const campaign = await findCampaignById(db, campaignId)
   if (!campaign) throw new Error(`There is no campaign ${campaignId}`)
-  const recipe = await requireRecipe(db, campaignId)
+  const [asked] = recipeId === undefined ? [] : await listRecipesById(db, [recipeId])
+  if (recipeId !== undefined && asked?.campaign_id !== campaignId) {
+    throw new Error(`Recipe ${recipeId} is not of campaign ${campaignId}`)
+  }
+  const recipe = asked ?? (await requireRecipe(db, campaignId))
   const bands = fromJson(campaign.bands)
   return {
     campaignId,

@@ -162,11 +162,23 @@ export interface ImageCandidatesPayload {
   campaignId: number
   /** These, imaged or not; left out: those that have no stamps by the recipe in force. */
   candidateIds?: number[]
+  /** By this recipe of the campaign; left out: by the one in force. */
+  recipeId?: number
 }
 
-/** Asks for stamps: of these candidates anew, or of all that have none by the recipe in force. */
-export async function requestImaging(db: Kysely<DB>, campaignId: number, candidateIds?: number[]): Promise<void> {
-  const payload: ImageCandidatesPayload = { campaignId, candidateIds }
-  const uniqueKey = [JOB.imageCandidates, campaignId, ...(candidateIds ?? ['all'])].join(':')
+/** Asks for stamps: of these candidates anew, by a recipe of theirs, or of all that have none by the recipe in force. */
+export async function requestImaging(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateIds?: number[],
+  recipeId?: number,
+): Promise<void> {
+  const payload: ImageCandidatesPayload = { campaignId, candidateIds, recipeId }
+  const uniqueKey = [
+    JOB.imageCandidates,
+    campaignId,
+    ...(candidateIds ?? ['all']),
+    ...(recipeId === undefined ? [] : ['by', recipeId]),
+  ].join(':')
   await enqueueJob(db, { kind: JOB.imageCandidates, campaignId, uniqueKey, payload })
 }

@@ -19,11 +19,11 @@ const USUAL_PLANE_BYTES = 28_800
  */
 export async function imageCandidates(
   tools: ImagingTools,
-  { campaignId, candidateIds }: ImageCandidatesPayload,
+  { campaignId, candidateIds, recipeId }: ImageCandidatesPayload,
   progress: (done: number, total: number) => Promise<void>,
 ): Promise<void> {
   const { db } = tools
-  const work = await campaignWork(db, campaignId)
+  const work = await campaignWork(db, campaignId, recipeId)
   let done = 0
   const { candidates: all, imaged } = await countImagedBy(db, campaignId, work.recipeId)
   const total = candidateIds?.length ?? all - imaged

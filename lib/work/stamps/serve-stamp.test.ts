@@ -1,8 +1,10 @@
 import { rmSync, statSync, truncateSync } from 'node:fs'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { fromJson } from '@/db/schema/values'
+import { defaultRecipe, type Recipe } from '@/lib/science/imaging/recipe'
 import { cutoutFits } from '@/tests/_support/cutouts'
 import { makeIntake, type IntakeScenario } from '@/tests/_support/intake'
+import { changeRecipe } from './change-recipe'
 import type { ImageCandidatesPayload } from './commit-outcomes'
 import { imageCandidates } from './image-candidates'
 import { serveStamp } from './serve-stamp'
@@ -62,6 +64,47 @@ describe('a stamp', () => {
     const [payload] = await imagingJobs()
     await imageCandidates(intake.tools, payload, async () => {})
     expect((await serve()).byteLength).toBeGreaterThan(0)
+  })
+})
+
+describe('a stamp by an earlier recipe', () => {
+  const darker: Recipe = { ...defaultRecipe(['g', 'r', 'i']), views: ['band:g'] }
+  darker.band = { ...darker.band, leastWhiteSigma: 500, mostWhiteSigma: 500 }
+  const stampRows = () =>
+    intake.db.selectFrom('stamp').select(['recipe_id', 'view', 'sha256']).orderBy('recipe_id').orderBy('view').execute()
+
+  it('that is lost is made again by that recipe, and those by the recipe in force stay', async () => {
+    const { version } = await intake.db
+      .selectFrom('recipe')
+      .select('version')
+      .where('campaign_id', '=', intake.campaign.id)
+      .orderBy('version', 'desc')
+      .executeTakeFirstOrThrow()
+    await changeRecipe(intake.db, intake.leadPermit, { recipe: darker, after: version })
+    await imageCandidates(intake.tools, { campaignId: intake.campaign.id }, async () => {})
+    const before = await stampRows()
+    expect(new Set(before.filter(({ view }) => view === 'band:g').map((row) => row.sha256)).size).toBe(2)
+    const bytes = statSync(stamp).size
+    rmSync(stamp)
+    const permit = await intake.permit(intake.lead, 'read')
+    await expect(serveStamp(intake.db, permit, intake.tools.stampFolder, sha256)).rejects.toMatchObject({ status: 404 })
+    const payload = (await imagingJobs()).find(({ candidateIds }) => candidateIds !== undefined)
+    if (!payload) throw new Error('It was not asked for')
+    await imageCandidates(intake.tools, payload, async () => {})
+    expect(statSync(stamp).size).toBe(bytes)
+    expect(await stampRows()).toEqual(before)
+  })
+
+  it('is not made by a recipe of another campaign', async () => {
+    const foreign = await intake.db
+      .selectFrom('recipe')
+      .select('id')
+      .where('campaign_id', '=', intake.otherCampaign.id)
+      .executeTakeFirstOrThrow()
+    const before = await stampRows()
+    const asked = { campaignId: intake.campaign.id, candidateIds: [1], recipeId: foreign.id }
+    await expect(imageCandidates(intake.tools, asked, async () => {})).rejects.toThrow('is not of campaign')
+    expect(await stampRows()).toEqual(before)
   })
 })
 
