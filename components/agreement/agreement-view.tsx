@@ -21,6 +21,8 @@ interface Props {
   fileName: string
   /** candidates in common below which a pair is told as little */
   leastShared: number
+  /** when something is raised, a sentence each */
+  alertRules: readonly string[]
   /** what the person who looks may not see */
   pseudonyms: boolean
 }
@@ -31,7 +33,7 @@ function headline({ campaign }: AgreementReport): string {
   return `Agreement is ${alphaInWords(alpha)}: alpha ${coefficient(alpha)}`
 }
 
-export function AgreementView({ report, campaignPath, fileName, leastShared, pseudonyms }: Props) {
+export function AgreementView({ report, campaignPath, fileName, leastShared, alertRules, pseudonyms }: Props) {
   const { graders, people, alerts } = report
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-8 px-5 py-8 md:px-10">
@@ -54,7 +56,7 @@ export function AgreementView({ report, campaignPath, fileName, leastShared, pse
         <>
           {alerts.length > 0 ? (
             <Part title={`${counted(alerts.length, 'thing')} to look at`}>
-              <AlertList alerts={alerts} graders={graders} />
+              <AlertList alerts={alerts} graders={graders} rules={alertRules} />
             </Part>
           ) : null}
           <Part title={progressTitle(report.progress)}>

@@ -70,12 +70,12 @@ export function csvFile({ columns, rows }: PlotTable): string {
   return [columns.map(({ name }) => name), ...rows].map((row) => csvLine([...row])).join('')
 }
 
-/** Hands a text to the browser as a file. */
+/** Hands a text to the browser as a file; whatever a file name should not hold becomes a hyphen. */
 export function saveFile(name: string, type: string, text: string): void {
   const url = URL.createObjectURL(new Blob([text], { type }))
   const link = document.createElement('a')
   link.href = url
-  link.download = name
+  link.download = name.replace(/[^\p{L}\p{N}._-]+/gu, '-')
   link.click()
   setTimeout(() => URL.revokeObjectURL(url), 10_000)
 }

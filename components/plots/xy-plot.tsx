@@ -98,6 +98,7 @@ export function XyPlot({
                 <Point
                   key={`${point.x} ${point.y}`}
                   at={mark++}
+                  end={xDomain[1]}
                   form={one.form}
                   point={point}
                   x={(value) => x(value) + apart(index)}
@@ -158,8 +159,11 @@ function Point({
   point,
   x,
   y,
+  end,
 }: {
   at: number
+  /** of the x axis: words near it stand at the left of their point */
+  end: number
   form: SymbolForm
   point: XyPoint
   x: Scale
@@ -173,7 +177,13 @@ function Point({
       ) : null}
       <SeriesSymbol form={form} x={x(point.x)} y={y(point.y)} />
       {point.text ? (
-        <text x={x(point.x) + 9} y={y(point.y) + (point.y < 0.1 ? -6 : 14)} fontSize="11" fill="var(--mute)">
+        <text
+          x={x(point.x) + (point.x > 0.9 * end ? -9 : 9)}
+          y={y(point.y) + (point.y < 0.1 ? -6 : 14)}
+          textAnchor={point.x > 0.9 * end ? 'end' : 'start'}
+          fontSize="11"
+          fill="var(--mute)"
+        >
           {point.text}
         </text>
       ) : null}

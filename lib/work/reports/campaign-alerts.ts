@@ -1,16 +1,9 @@
+import { ALERT } from './alert-thresholds'
 import type { AgreementReport, Alert, CampaignAgreement } from './report-types'
-
-/** Krippendorff (2004, section 11.4.2, from memory): below 0.667 not even tentative conclusions. */
-const LOW_ALPHA = 0.667
-/** An alpha over fewer candidates may be chance. Our choice, no source. */
-const LEAST_CANDIDATES = 30
-/** Stamps of each kind below which completeness and reliability are hardly measured: with 20, a share of 0.9 has a Wilson
- * interval of about 0.70 to 0.97. Our choice, no source. */
-export const LEAST_STAMPS = 20
 
 export function alertOnAlpha({ coefficients, candidates }: CampaignAgreement): Alert[] {
   const alpha = coefficients.find(({ key }) => key === 'alpha')
-  if (!alpha || alpha.value === null || alpha.value >= LOW_ALPHA || candidates < LEAST_CANDIDATES) return []
+  if (!alpha || alpha.value === null || alpha.value >= ALERT.lowAlpha || candidates < ALERT.leastCandidates) return []
   const interval = alpha.interval
     ? ` (95 % interval ${alpha.interval.low.toFixed(2)} to ${alpha.interval.high.toFixed(2)})`
     : ''
@@ -29,13 +22,13 @@ export function alertOnAlpha({ coefficients, candidates }: CampaignAgreement): A
 export function alertOnStamps({ calibration }: Pick<AgreementReport, 'calibration'>): Alert[] {
   const { stamps, lensStamps } = calibration
   const others = stamps - lensStamps
-  if (lensStamps >= LEAST_STAMPS && others >= LEAST_STAMPS) return []
+  if (lensStamps >= ALERT.leastStamps && others >= ALERT.leastStamps) return []
   return [
     {
       key: 'few-stamps',
       grader: null,
       title: stamps === 0 ? 'There are no calibration stamps' : 'There are few calibration stamps',
-      because: `${lensStamps} known lenses and ${others} known non-lenses are in the campaign; below ${LEAST_STAMPS} of each, reliability rests on the graders’ agreement with each other.`,
+      because: `${lensStamps} known lenses and ${others} known non-lenses are in the campaign; below ${ALERT.leastStamps} of each, reliability rests on the graders’ agreement with each other.`,
       advice: 'Mix more candidates of known truth into the queue, simulated lenses among them.',
     },
   ]

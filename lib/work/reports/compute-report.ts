@@ -46,7 +46,14 @@ export async function computeReport(
   // A run that counted other people than those who count now tells the rates of another consensus.
   const model = run?.model && run.newest_left_out_id === input.newestLeftOutId ? fromJson(run.model) : null
   const fit = await fitLenses(sheet, outIds, model)
+  await nextTurn()
   const tables = await countPairs(sheet)
+  const campaign = await measureCampaign(sheet, isOut)
+  const pairs = await measurePairs(tables)
+  const people = await reportOnPeople(sheet, fit, isOut)
+  await nextTurn()
+  const score = measureScore(sheet.candidates)
+  await nextTurn()
   return {
     madeAt: new Date(now).toISOString(),
     personIds: members.map(({ personId }) => personId),
@@ -54,11 +61,11 @@ export async function computeReport(
     tables,
     progress: measureProgress(sheet, rule, now),
     fit: { source: fit.source, converged: fit.converged, lensShare: fit.lensShare },
-    campaign: await measureCampaign(sheet, isOut),
-    pairs: await measurePairs(tables),
-    people: await reportOnPeople(sheet, fit, isOut),
+    campaign,
+    pairs,
+    people,
     calibration: measureCalibration(sheet, fit, isOut),
-    score: measureScore(sheet.candidates),
+    score,
     days: countPerDay(sheet),
   }
 }

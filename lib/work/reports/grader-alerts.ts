@@ -1,18 +1,9 @@
 import { GRADES } from '@/lib/science/agreement/grades'
+import { ALERT } from './alert-thresholds'
 import type { AlertInput } from './alerts'
 import { tableOfPair } from './pair-agreement'
-import { QUICK_SECONDS } from './quick-stretch'
 import type { Alert } from './report-types'
 import { nearnessOfGraders } from './typical-agreement'
-
-/** All thresholds here are our choice, no source. They raise a question and decide nothing. */
-const FAR_BELOW_MEDIAN = 0.2
-const LEAST_SHARED_PAIRS = 100
-const LEAST_GRADES_SAME = 50
-const SAME_SHARE = 0.95
-const SAME_ABOVE_OTHERS = 0.1
-const DRIFT_STEP = 0.1
-const HELD_HOURS = 2
 
 const percent = (share: number) => `${Math.round(100 * share)} %`
 const day = (milliseconds: number) => new Date(milliseconds).toISOString().slice(0, 10)
@@ -22,17 +13,17 @@ export function alertOnFar({ pairs, people, isOut }: AlertInput, grader: number)
   const among = pairs.filter(({ first, second }) => !isOut[first] && !isOut[second])
   const nearness = nearnessOfGraders(among, people.length)
   const own = nearness[grader]
-  if (own.kappa === null || own.shared < LEAST_SHARED_PAIRS) return []
+  if (own.kappa === null || own.shared < ALERT.leastSharedGrades) return []
   const others = nearness
     .flatMap(({ kappa, shared }, other) =>
-      other !== grader && kappa !== null && shared >= LEAST_SHARED_PAIRS ? [kappa] : [],
+      other !== grader && kappa !== null && shared >= ALERT.leastSharedGrades ? [kappa] : [],
     )
     .sort((a, b) => a - b)
   // With fewer than two others one cannot say who is far from whom.
   if (others.length < 2) return []
   const middle = others.length >> 1
   const median = others.length % 2 === 1 ? others[middle] : (others[middle - 1] + others[middle]) / 2
-  if (own.kappa > median - FAR_BELOW_MEDIAN) return []
+  if (own.kappa > median - ALERT.farBelowMedian) return []
   return [
     {
       key: 'far-from-others',
@@ -47,10 +38,10 @@ export function alertOnFar({ pairs, people, isOut }: AlertInput, grader: number)
 /** One letter in 95 % of 50 grades or more, and at least 10 points more often than the others gave it to the same candidates. */
 export function alertOnSame({ people, tables }: AlertInput, grader: number): Alert[] {
   const { grades, letters } = people[grader]
-  if (grades < LEAST_GRADES_SAME) return []
+  if (grades < ALERT.leastGradesSame) return []
   const most = letters.reduce((a, b) => (b.given > a.given ? b : a))
   const share = most.given / grades
-  if (share < SAME_SHARE) return []
+  if (share < ALERT.sameShare) return []
   const code = GRADES.indexOf(most.grade)
   let same = 0
   let all = 0
@@ -64,7 +55,7 @@ export function alertOnSame({ people, tables }: AlertInput, grader: number): Ale
       }
     }
   }
-  if (all === 0 || share - same / all < SAME_ABOVE_OTHERS) return []
+  if (all === 0 || share - same / all < ALERT.sameAboveOthers) return []
   return [
     {
       key: 'same-grade',
@@ -85,7 +76,7 @@ export function alertOnQuick({ people }: AlertInput, grader: number): Alert[] {
       key: 'quick-stretch',
       grader,
       title: 'A very quick stretch',
-      because: `${looks} looks in a row (their ${stretch.from.toLocaleString('en')}th to ${stretch.to.toLocaleString('en')}th, from ${day(stretch.at)}) took ${stretch.medianSeconds.toFixed(1)} s in the median; three in four or more took less than ${QUICK_SECONDS} s.`,
+      because: `${looks} looks in a row (their ${stretch.from.toLocaleString('en')}th to ${stretch.to.toLocaleString('en')}th, from ${day(stretch.at)}) took ${stretch.medianSeconds.toFixed(1)} s in the median; three in four or more took less than ${ALERT.quickSeconds} s.`,
       advice: 'Obvious non-lenses go fast. See whether these grades stand beside the others’ before asking.',
     },
   ]
@@ -94,7 +85,7 @@ export function alertOnQuick({ people }: AlertInput, grader: number): Alert[] {
 /** First against last third of their grades: shares at least 0.1 apart, with intervals that do not overlap. */
 export function alertOnDrift({ people }: AlertInput, grader: number): Alert[] {
   const change = people[grader].drift.change
-  if (!change || Math.abs(change.after.value - change.before.value) < DRIFT_STEP) return []
+  if (!change || Math.abs(change.after.value - change.before.value) < ALERT.driftStep) return []
   const share = ({ value, interval }: typeof change.before) =>
     `${percent(value)} (${percent(interval.low)} to ${percent(interval.high)})`
   const letters = change.what === 'lenses' ? 'A or B' : 'C or N'
@@ -113,7 +104,7 @@ export function alertOnHeld({ held, personIds, now }: AlertInput, grader: number
   const own = held.find(({ personId }) => personId === personIds[grader])
   if (!own) return []
   const idleHours = own.lastGradeAt === null ? Infinity : (now - Date.parse(own.lastGradeAt)) / 3_600_000
-  if (idleHours < HELD_HOURS) return []
+  if (idleHours < ALERT.heldHours) return []
   const since = own.lastGradeAt === null ? 'has not graded yet' : `last graded ${Math.floor(idleHours)} hours ago`
   const candidates = own.candidates === 1 ? 'one candidate' : `${own.candidates} candidates`
   return [

@@ -1,10 +1,8 @@
+import { ALERT } from './alert-thresholds'
 import type { GradeSheet } from './grade-sheet'
 import type { GraderReport } from './report-types'
 
-/** A stretch is very quick when at least 15 of 20 looks in a row took less than a second each. Our choice, no source. */
-export const STRETCH = 20
-export const QUICK_SECONDS = 1
-const QUICK_OF_STRETCH = 15
+const { stretch: STRETCH, quickOfStretch: QUICK_OF_STRETCH, quickSeconds: QUICK_SECONDS } = ALERT
 
 /** The longest run of overlapping very quick stretches of a person; null for none. Looks without a time are not quick. */
 export function findQuickStretch(sheet: GradeSheet, from: number, to: number): GraderReport['quickStretch'] {

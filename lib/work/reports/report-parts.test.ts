@@ -1,9 +1,11 @@
 import { describe, expect, it } from 'vitest'
 import { readFixture } from '@/lib/science/agreement/_fixtures'
 import { jeffreysInterval } from '@/lib/science/agreement/binomial-intervals'
-import { sheetOf } from './_sheet'
+import type { Answer } from '@/lib/science/agreement/grades'
+import { SeededRandom } from '@/lib/science/lensing/seeded-random'
+import { sheetOf, type SheetAnswer } from './_sheet'
 import { measureCalibration } from './calibration-report'
-import { measureDrift } from './drift'
+import { judgedGrades, measureDrift } from './drift'
 import { countPerDay } from './grades-per-day'
 import { medianOf } from './grader-report'
 import { fitLenses } from './lens-fit'
@@ -146,6 +148,30 @@ describe('drift', () => {
     )
     expect(found.lenses).toBeCloseTo(0, 6)
     expect(found.others).toBeCloseTo(0, 6)
+  })
+
+  it('tells no change of a constant person while the others give fewer and fewer looks', async () => {
+    // 30 % lenses; three others of known skill look at every candidate of the first third, one of them at those of the last.
+    const random = new SeededRandom(3)
+    const draw = (lens: boolean, right: number): Answer => (random.chance(right) === lens ? 'B' : 'N')
+    const answers: SheetAnswer[] = []
+    const isLens = Array.from({ length: 900 }, () => random.chance(0.3))
+    for (const [at, lens] of isLens.entries()) answers.push({ grader: 0, candidate: at, grade: draw(lens, 0.85) })
+    for (const other of [1, 2, 3]) {
+      for (const [at, lens] of isLens.entries()) {
+        if (at < 300 || other === 1) answers.push({ grader: other, candidate: at, grade: draw(lens, 0.8) })
+      }
+    }
+    const sheet = sheetOf(answers, 4)
+    const judged = judgedGrades(sheet, await fitLenses(sheet, new Set(), null), 0, false, { from: 0, to: 900 })
+    expect(measureDrift(judged).change).toBeNull()
+    const said = (from: number, to: number) => {
+      const some = judged.slice(from, to)
+      const sum = (weigh: (one: JudgedGrade) => number) => some.reduce((total, one) => total + weigh(one), 0)
+      return sum(({ saysLens, probability }) => (saysLens ? probability : 0)) / sum(({ probability }) => probability)
+    }
+    // Weighing by probability alone would have it that they had changed.
+    expect(said(0, 300) - said(600, 900)).toBeGreaterThan(0.1)
   })
 })
 

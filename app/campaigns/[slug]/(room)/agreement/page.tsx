@@ -3,6 +3,7 @@ import { notFound } from 'next/navigation'
 import { permitPage } from '@/app/_lib/page-permit'
 import { AgreementView } from '@/components/agreement/agreement-view'
 import { agreementReport } from '@/lib/work/reports/agreement-report'
+import { ALERT_RULES } from '@/lib/work/reports/alert-thresholds'
 import { LEAST_SHARED } from '@/lib/work/reports/pair-agreement'
 
 export const metadata: Metadata = { title: 'Agreement' }
@@ -18,6 +19,7 @@ export default async function AgreementPage({ params }: PageProps<'/campaigns/[s
       campaignPath={`/campaigns/${slug}`}
       fileName={slug}
       leastShared={LEAST_SHARED}
+      alertRules={ALERT_RULES}
       pseudonyms={permit.role === 'viewer'}
     />
   )
