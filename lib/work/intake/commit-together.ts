@@ -2,6 +2,7 @@ import 'server-only'
 import type { Kysely } from 'kysely'
 import type { DB } from '@/db/schema'
 import { syncCommits, unsynced } from '@/db/unsynced'
+import { giveWay } from '@/lib/platform/jobs/give-way'
 
 type Work<T> = (transaction: Kysely<DB>) => Promise<T>
 
@@ -38,7 +39,7 @@ async function drain(db: Kysely<DB>, queue: Waiting[]): Promise<void> {
   while (queue.length > 0) {
     await commit(db, queue.splice(0, MOST_TOGETHER))
     // Others have their turn between two commits.
-    await new Promise((resolve) => setImmediate(resolve))
+    await giveWay()
   }
   queues.delete(db)
 }

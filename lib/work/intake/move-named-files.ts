@@ -8,6 +8,7 @@ import { clearImaged } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
 import type { ManifestRow } from '@/db/schema/intake'
 import { isoTime } from '@/lib/platform/clock'
+import { giveWay } from '@/lib/platform/jobs/give-way'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { baseName } from './file-name'
@@ -43,6 +44,7 @@ export async function moveNamedFiles(
       else problems.push({ line: row.line, sentence: stays(file, row.candidate) })
     }
     await readAgain(db, campaignId, moved)
+    await giveWay()
   }
 }
 

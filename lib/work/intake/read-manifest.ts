@@ -5,13 +5,15 @@ import { setFileFates, type WaitingFile } from '@/db/queries/intake'
 import { deleteManifestRows, insertManifestRows } from '@/db/queries/manifests'
 import type { DB } from '@/db/schema'
 import type { ManifestRow } from '@/db/schema/intake'
+import { unsynced } from '@/db/unsynced'
 import { isoTime } from '@/lib/platform/clock'
+import { giveWay } from '@/lib/platform/jobs/give-way'
 import { moveNamedFiles } from './move-named-files'
-import type { ManifestEntry, ParsedManifest } from './parse-manifest'
+import { unpackPart, type PackedManifest } from './pack-manifest'
+import type { ManifestEntry } from './parse-manifest'
 import { retellFacts } from './retell-facts'
 import { tryUnmatchedAgain } from './try-again'
 
-const ROWS_PER_STATEMENT = 500
 const PROBLEMS_TOLD = 5
 const MOST_PROBLEMS = 20_000
 
@@ -23,10 +25,10 @@ export async function keepManifest(
   db: Kysely<DB>,
   campaignId: number,
   file: WaitingFile,
-  parsed: ParsedManifest,
+  packed: PackedManifest,
 ): Promise<void> {
-  const { entries, refusal } = parsed
-  const problems = parsed.problems.map(problemOfLine)
+  const { parts, lines, refusal } = packed
+  const problems = packed.problems.map(problemOfLine)
   if (refusal) {
     await db.transaction().execute(async (transaction) => {
       await replaceFileProblems(transaction, file.id, [])
@@ -35,15 +37,13 @@ export async function keepManifest(
     return
   }
   await deleteManifestRows(db, file.id)
-  for (let start = 0; start < entries.length; start += ROWS_PER_STATEMENT) {
-    const part = entries.slice(start, start + ROWS_PER_STATEMENT)
-    await insertManifestRows(
-      db,
-      part.map((entry) => rowOf(entry, campaignId, file.id)),
-    )
+  for (const part of parts) {
+    const rows = unpackPart(part).map((entry) => rowOf(entry, campaignId, file.id))
+    await unsynced(db, (connection) => insertManifestRows(connection, rows))
+    await giveWay()
   }
   problems.push(...(await retellFacts(db, campaignId, file.id)))
-  if (entries.some(({ candidate, fileName }) => candidate !== null && fileName !== null)) {
+  if (packed.namesFiles) {
     problems.push(...(await moveNamedFiles(db, campaignId, file.id)))
   }
   await db.transaction().execute(async (transaction) => {
@@ -51,7 +51,7 @@ export async function keepManifest(
     const to = {
       fate: 'read',
       fault: null,
-      reason: manifestReason(entries.length, problems),
+      reason: manifestReason(lines, problems),
       duplicateOf: null,
     } as const
     await setFileFates(transaction, [file.id], to, isoTime())

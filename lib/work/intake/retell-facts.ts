@@ -17,6 +17,7 @@ import { fromJson } from '@/db/schema/values'
 import { imageCentre } from '@/lib/science/sky/image-centre'
 import type { Wcs } from '@/lib/science/sky/wcs'
 import { isoTime } from '@/lib/platform/clock'
+import { giveWay } from '@/lib/platform/jobs/give-way'
 import { baseName } from './file-name'
 import { groupBy } from './group-by'
 import { manifestFacts, type ManifestFacts } from './manifest-facts'
@@ -36,6 +37,7 @@ export async function retellFacts(db: Kysely<DB>, campaignId: number, manifestId
   const problems: NewFileProblem[] = []
   for (let start = 0; start < names.length; start += PER_PAGE) {
     problems.push(...(await retell(db, campaignId, manifestId, bands, names.slice(start, start + PER_PAGE))))
+    await giveWay()
   }
   return problems
 }
@@ -53,6 +55,7 @@ async function namesTold(db: Kysely<DB>, campaignId: number, manifestId: number)
       for (const { file_base } of rows) if (file_base !== null) bases.add(file_base.toLowerCase())
       const named = [...new Set(rows.flatMap(({ candidate }) => candidate ?? []))]
       for (const name of await listCandidateNames(db, campaignId, named)) names.add(name)
+      await giveWay()
     }
   }
   for (let afterId = 0; bases.size > 0;) {
@@ -61,6 +64,7 @@ async function namesTold(db: Kysely<DB>, campaignId: number, manifestId: number)
     if (!last) break
     afterId = last.id
     for (const { name, candidate } of files) if (bases.has(baseName(name).toLowerCase())) names.add(candidate)
+    await giveWay()
   }
   return [...names]
 }

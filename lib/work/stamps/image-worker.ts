@@ -7,7 +7,8 @@ import { setPriority } from 'node:os'
 import { isMainThread } from 'node:worker_threads'
 import { bandsOfFile } from '@/lib/work/intake/bands-of-file'
 import { candidateOfHeaders } from '@/lib/work/intake/candidate-of-header'
-import { parseManifest, type ParsedManifest } from '@/lib/work/intake/parse-manifest'
+import { packManifest, type PackedManifest } from '@/lib/work/intake/pack-manifest'
+import { parseManifest } from '@/lib/work/intake/parse-manifest'
 import { codePlanes } from './code-planes'
 import { drawPreview } from './draw-stamps'
 import { imageCandidate } from './image-candidate'
@@ -58,6 +59,7 @@ async function probeFile(file: StoredFile, bands: string[]): Promise<FileProbe> 
   }
 }
 
-export async function manifest({ path, columns }: ManifestTask): Promise<ParsedManifest> {
-  return parseManifest(readFileSync(path), columns === null ? {} : (JSON.parse(columns) as Record<string, string>))
+export async function manifest({ path, columns }: ManifestTask): Promise<PackedManifest> {
+  const chosen = columns === null ? {} : (JSON.parse(columns) as Record<string, string>)
+  return packManifest(parseManifest(readFileSync(path), chosen))
 }

@@ -1,4 +1,4 @@
-import type { ParsedManifest } from '@/lib/work/intake/parse-manifest'
+import type { PackedManifest } from '@/lib/work/intake/pack-manifest'
 import type { Recipe } from '@/lib/science/imaging/recipe'
 import type { SkyPosition } from '@/lib/science/sky/separation'
 
@@ -158,5 +158,5 @@ export interface ManifestTask {
 export interface ImageRunner {
   image(task: ImageTask): Promise<CandidateOutcome[]>
   probe(task: ProbeTask): Promise<FileProbe[]>
-  manifest(task: ManifestTask): Promise<ParsedManifest>
+  manifest(task: ManifestTask): Promise<PackedManifest>
 }
