@@ -4,12 +4,10 @@ import { useEffect, useEffectEvent, useRef, type Dispatch } from 'react'
 import { askQueue, giveBackQueue } from './bench-api'
 import type { BenchAction, BenchSession } from './bench-session'
 import { firstsIn, type OutboxSnapshot } from './grade-outbox'
+import { supplyDepth } from './supply-depth'
 
-/** Ask for more when fewer than LOW lie ready, up to TARGET. */
-const LOW = 4
-const TARGET = 6
 /** The most that the server lends at once. */
-const MOST = 20
+const MOST = 60
 /** Well within the twenty minutes of a lease. */
 const RENEW_MS = 5 * 60_000
 /** Without any key, touch or mouse for so long, leases are left to run out, so that others get the candidates. */
@@ -33,13 +31,14 @@ interface Around {
  */
 export function useSupply({ slug, personId, session, dispatch, outbox }: Around): void {
   const { upcoming, counts, supply } = session
+  const { target, low } = supplyDepth(session.given)
   const asking = useRef(false)
   const lastTouch = useRef(0)
 
   const ask = useEffectEvent(async (resumed: boolean) => {
     if (asking.current) return
     // What waits to be sent is still lent to this person and comes back first.
-    const wanted = Math.min(MOST, Math.max(upcoming.length, TARGET) + outbox().waiting.length)
+    const wanted = Math.min(MOST, Math.max(upcoming.length, target) + outbox().waiting.length)
     asking.current = true
     dispatch({ type: 'asked' })
     try {
@@ -62,7 +61,7 @@ export function useSupply({ slug, personId, session, dispatch, outbox }: Around)
     }
   })
 
-  const short = upcoming.length < LOW && counts.left > upcoming.length
+  const short = upcoming.length < low && counts.left > upcoming.length
   useEffect(() => {
     if (short && supply === 'ready') void ask(false)
   }, [short, supply])

@@ -9,8 +9,8 @@ import { hashPassword } from '@/lib/work/people/passwords'
 
 /** A site with one lead and one campaign of bands g, r, i in a data folder, and what has come of its intake. */
 export const SLUG = 'wide-search'
-const EMAIL = 'avocet@saltmarsh.test'
-const PASSWORD = 'mud between the toes'
+export const EMAIL = 'avocet@saltmarsh.test'
+export const PASSWORD = 'mud between the toes'
 
 const open = (dataFolder: string) => openDatabase(path.join(dataFolder, 'ringside.sqlite'))
 

@@ -41,8 +41,9 @@ export async function makeDataFolder(): Promise<string> {
   return mkdtemp(path.join(tmpdir(), 'ringside-e2e-'))
 }
 
-export async function startTestServer(dataFolder: string): Promise<TestServer> {
-  const port = await freePort()
+/** @param samePort of a server that was killed, for browsers that have its pages open. */
+export async function startTestServer(dataFolder: string, samePort?: number): Promise<TestServer> {
+  const port = samePort ?? (await freePort())
   const url = `http://127.0.0.1:${port}`
   const child = spawn(
     process.execPath,

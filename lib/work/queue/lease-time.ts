@@ -5,5 +5,5 @@
 export const LEASE_MINUTES = 20
 export const LEASE_MS = LEASE_MINUTES * 60_000
 
-/** The most that one person can hold at once. */
-export const MOST_LENT = 20
+/** The most that one person can hold at once: three minutes of the quickest work, and what waits in a cut network. */
+export const MOST_LENT = 60
