@@ -5,6 +5,7 @@ import type { TableColumn } from '@/components/table/table-column'
 import type { TableSort } from '@/components/table/table-state'
 import { StatePill } from '@/components/ui/state-pill'
 import { VoteStrip } from '@/components/ui/vote-strip'
+import { probabilityBeside } from '@/lib/science/agreement/weight-words'
 import { formatDeclination, formatRightAscension } from '@/lib/science/sky/coordinates'
 import type { CandidateTableRow } from '@/lib/work/catalogue/candidate-table'
 
@@ -79,6 +80,17 @@ const JUDGED: readonly TableColumn<CandidateRow>[] = [
     cell: (row) => figure(row.verdict?.spread, 2),
   },
 ]
+
+const PROBABILITY: TableColumn<CandidateRow> = {
+  id: 'probability',
+  label: 'Lens p',
+  title: 'Lens probability of the verdict',
+  sortable: true,
+  largestFirst: true,
+  numeric: true,
+  hidden: true,
+  cell: (row) => (row.verdict?.probability == null ? none : probabilityBeside(row.verdict.probability)),
+}
 
 const SCORE: TableColumn<CandidateRow> = {
   id: 'score',
@@ -156,7 +168,19 @@ const STATES = ['open', 'split', 'confirmed', 'set aside'] as const
 
 /** For each role a list of its own, made once: the score and what is calibration are for leads. */
 export const CANDIDATE_COLUMNS: Record<ColumnsFor, readonly TableColumn<CandidateRow>[]> = {
-  lead: [NAME, STATE(STATES), ...JUDGED, SCORE, ...POSITION, DESIGNATION],
-  grader: [NAME, STATE([UNGRADED, ...STATES]), ...JUDGED, ...POSITION, DESIGNATION],
-  viewer: [NAME, STATE(STATES), ...JUDGED, ...POSITION, DESIGNATION],
+  lead: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, SCORE, ...POSITION, DESIGNATION],
+  grader: [NAME, STATE([UNGRADED, ...STATES]), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
+  viewer: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
+}
+
+/** The same where the rule goes by reliability: the lens probability in the place of the spread. */
+const told = (columns: readonly TableColumn<CandidateRow>[]) =>
+  columns.map((column) => {
+    if (column.id === 'probability') return { ...column, hidden: false }
+    return column.id === 'spread' ? { ...column, hidden: true } : column
+  })
+export const COLUMNS_BY_RELIABILITY: typeof CANDIDATE_COLUMNS = {
+  lead: told(CANDIDATE_COLUMNS.lead),
+  grader: told(CANDIDATE_COLUMNS.grader),
+  viewer: told(CANDIDATE_COLUMNS.viewer),
 }

@@ -8,6 +8,7 @@ const ORDERS: Readonly<Record<string, CandidateTableInput['order']>> = {
   state: 'state',
   mean: 'mean',
   spread: 'spread',
+  probability: 'probability',
   score: 'score',
   ra: 'raDeg',
   dec: 'decDeg',

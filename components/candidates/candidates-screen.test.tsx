@@ -31,8 +31,8 @@ beforeEach(() => {
   window.history.replaceState(null, '', '/campaigns/north/candidates')
 })
 
-function show(role: ColumnsFor, rows: CandidateTableRow[], count = rows.length, all = count) {
-  return render(<CandidatesScreen slug="north" role={role} table={{ rows, count, all }} />)
+function show(role: ColumnsFor, rows: CandidateTableRow[], count = rows.length, all = count, byReliability = false) {
+  return render(<CandidatesScreen slug="north" role={role} table={{ rows, count, all, byReliability }} />)
 }
 
 it('asks the server for another order instead of sorting the page it has', async () => {
@@ -85,4 +85,13 @@ it('turns an address into what the server is asked for', () => {
 it('does not take an order or a state from the address that the role does not have', () => {
   const query = candidateQuery('viewer', new URLSearchParams('sort=-score&state=not graded by me'), 100)
   expect(query).toMatchObject({ order: 'name', descending: false, filter: { states: [], withheld: false } })
+})
+
+it.each([
+  [true, 'Lens p', 'Spread'],
+  [false, 'Spread', 'Lens p'],
+])('tells verdicts by what the rule goes by: by reliability %s', (byReliability, shown, hidden) => {
+  show('lead', [row(1)], 1, 1, byReliability)
+  expect(screen.getByRole('columnheader', { name: shown })).toBeVisible()
+  expect(screen.queryByRole('columnheader', { name: hidden })).toBeNull()
 })

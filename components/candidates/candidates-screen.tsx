@@ -5,7 +5,7 @@ import { DataTable } from '@/components/table/data-table'
 import { ButtonLink } from '@/components/ui/button'
 import { EmptyState, VisualGradeCaution } from '@/components/ui/notice'
 import type { CandidateTable } from '@/lib/work/catalogue/candidate-table'
-import { CANDIDATE_COLUMNS, CANDIDATE_SORT, type ColumnsFor } from './candidate-columns'
+import { CANDIDATE_COLUMNS, CANDIDATE_SORT, COLUMNS_BY_RELIABILITY, type ColumnsFor } from './candidate-columns'
 
 interface CandidatesScreenProps {
   slug: string
@@ -56,7 +56,7 @@ export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
         <DataTable
           label="Candidates"
           noun="candidates"
-          columns={CANDIDATE_COLUMNS[role]}
+          columns={(table.byReliability ? COLUMNS_BY_RELIABILITY : CANDIDATE_COLUMNS)[role]}
           rows={linked}
           rowId={(row) => String(row.id)}
           defaultSort={CANDIDATE_SORT}

@@ -4,6 +4,7 @@ import { StampThumbnail } from '@/components/table/stamp-thumbnail'
 import type { TableColumn } from '@/components/table/table-column'
 import type { TableSort } from '@/components/table/table-state'
 import { VoteStrip } from '@/components/ui/vote-strip'
+import { probabilityBeside } from '@/lib/science/agreement/weight-words'
 import { formatDeclination, formatRightAscension } from '@/lib/science/sky/coordinates'
 import type { CatalogueTableRow } from '@/lib/work/catalogue/catalogue-table'
 
@@ -72,6 +73,18 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
     largestFirst: true,
     numeric: true,
     cell: (row) => figure(row.spread, 2),
+  },
+  {
+    id: 'probability',
+    label: 'Lens p',
+    title: 'Lens probability',
+    value: (row) => row.probability ?? undefined,
+    filter: 'range',
+    sortable: true,
+    largestFirst: true,
+    numeric: true,
+    hidden: true,
+    cell: (row) => (row.probability === null ? none : probabilityBeside(row.probability)),
   },
   {
     id: 'n',
@@ -211,6 +224,12 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
   redshift('zlens', 'z lens', 'Redshift of the lens', (row) => row.lensRedshift),
   redshift('zsource', 'z source', 'Redshift of the source', (row) => row.sourceRedshift),
 ]
+
+/** The same where verdicts are by reliability: the lens probability in the place of the spread. */
+export const COLUMNS_BY_RELIABILITY: readonly TableColumn<CatalogueRow>[] = CATALOGUE_COLUMNS.map((column) => {
+  if (column.id === 'probability') return { ...column, hidden: false }
+  return column.id === 'spread' ? { ...column, hidden: true } : column
+})
 
 const CLASS_TONE = { A: 'text-letter-a', B: 'text-letter-b', C: 'text-letter-c' } as const
 

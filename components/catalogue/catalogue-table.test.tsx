@@ -18,6 +18,7 @@ const row = (id: number, more: Partial<CatalogueTableRow>): CatalogueTableRow =>
   gradeClass: 'A',
   mean: 3,
   spread: 0,
+  probability: null,
   votes: { A: 4, B: 0, C: 0, N: 0, U: 0 },
   decidedBy: 'verdict',
   tags: '',
@@ -150,4 +151,17 @@ it('copies a designation with one click', async () => {
   await user.click(screen.getByRole('button', { name: 'Copy designation SWS J000002.00+000000.0' }))
   expect(await navigator.clipboard.readText()).toBe('SWS J000002.00+000000.0')
   expect(screen.getByRole('button', { name: 'designation copied' })).toBeInTheDocument()
+})
+
+it('shows the lens probability in the place of the spread where verdicts are by reliability', () => {
+  show([row(1, { probability: 0.99871 }), row(2, { probability: null })])
+  expect(screen.getByRole('columnheader', { name: 'Lens p' })).toBeVisible()
+  expect(screen.getByText('0.999')).toBeVisible()
+  expect(screen.queryByRole('columnheader', { name: 'Spread' })).toBeNull()
+})
+
+it('has no column for it where they are by the mean', () => {
+  show()
+  expect(screen.queryByRole('columnheader', { name: 'Lens p' })).toBeNull()
+  expect(screen.getByRole('columnheader', { name: 'Spread' })).toBeVisible()
 })

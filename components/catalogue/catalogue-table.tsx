@@ -3,7 +3,7 @@
 import { useMemo } from 'react'
 import { DataTable } from '@/components/table/data-table'
 import type { CatalogueTableRow } from '@/lib/work/catalogue/catalogue-table'
-import { CATALOGUE_COLUMNS, CATALOGUE_SORT } from './catalogue-columns'
+import { CATALOGUE_COLUMNS, CATALOGUE_SORT, COLUMNS_BY_RELIABILITY } from './catalogue-columns'
 
 /** The whole catalogue, sorted and narrowed in the browser. */
 export function CatalogueTable({ slug, rows }: { slug: string; rows: readonly CatalogueTableRow[] }) {
@@ -15,7 +15,7 @@ export function CatalogueTable({ slug, rows }: { slug: string; rows: readonly Ca
     <DataTable
       label="Confirmed candidates"
       noun="entries"
-      columns={CATALOGUE_COLUMNS}
+      columns={rows.some(({ probability }) => probability !== null) ? COLUMNS_BY_RELIABILITY : CATALOGUE_COLUMNS}
       rows={linked}
       rowId={(row) => String(row.id)}
       defaultSort={CATALOGUE_SORT}

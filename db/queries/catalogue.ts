@@ -26,6 +26,7 @@ export interface CandidateRow {
   cannotJudge: number | null
   mean: number | null
   spread: number | null
+  probability: number | null
   reason: string | null
 }
 
@@ -65,6 +66,7 @@ function candidateRows(db: Kysely<DB>) {
       'verdict.cannot_judge as cannotJudge',
       'verdict.mean',
       'verdict.spread',
+      'verdict.probability',
       'verdict.reason',
     ])
     .select(sql<0 | 1>`candidate.truth is not null`.as('calibration'))
@@ -86,7 +88,17 @@ export async function listCandidatesAfter(
   return candidateRows(db).where('candidate.id', 'in', ids).orderBy('candidate.id').execute()
 }
 
-export const CANDIDATE_ORDERS = ['id', 'name', 'raDeg', 'decDeg', 'state', 'mean', 'spread', 'score'] as const
+export const CANDIDATE_ORDERS = [
+  'id',
+  'name',
+  'raDeg',
+  'decDeg',
+  'state',
+  'mean',
+  'spread',
+  'probability',
+  'score',
+] as const
 export type CandidateOrder = (typeof CANDIDATE_ORDERS)[number]
 
 const ORDER_COLUMN: Record<CandidateOrder, RawBuilder<unknown>> = {
@@ -97,11 +109,13 @@ const ORDER_COLUMN: Record<CandidateOrder, RawBuilder<unknown>> = {
   score: sql`candidate.score`,
   mean: sql`verdict.mean`,
   spread: sql`verdict.spread`,
+  probability: sql`verdict.probability`,
   // In the order of a candidate's life.
   state: sql`case candidate.state when 'open' then 0 when 'split' then 1 when 'confirmed' then 2 else 3 end`,
 }
 
-const JUDGED_ORDERS: readonly CandidateOrder[] = ['mean', 'spread', 'state']
+const VERDICT_ORDERS: readonly CandidateOrder[] = ['mean', 'spread', 'probability']
+const JUDGED_ORDERS: readonly CandidateOrder[] = [...VERDICT_ORDERS, 'state']
 
 export interface CandidateFilter {
   states?: readonly CandidateState[]
@@ -144,7 +158,7 @@ export async function listCandidateSlice(
   const key = judged ? sql`case when ${isRevealed(scope)} then ${column} end` : column
   const ids = await filtered(db, scope, slice.filter)
     .select('candidate.id')
-    .$if(order === 'mean' || order === 'spread', (query) =>
+    .$if(VERDICT_ORDERS.includes(order), (query) =>
       query.leftJoin('verdict', (join) =>
         join
           .onRef('verdict.candidate_id', '=', 'candidate.id')
@@ -204,6 +218,7 @@ export async function listEntriesAfter(
       'candidate.state_since as stateSince',
       'designation.designation',
       'verdict.reason as verdictReason',
+      'verdict.probability',
       'ruling.id as rulingId',
       'ruling.grade as rulingGrade',
       'ruling.reason as rulingReason',
@@ -228,7 +243,8 @@ export type EntryRow = Awaited<ReturnType<typeof listEntriesAfter>>[number]
 
 /**
  * The answers that count, by candidate and in the order given: of each person the newest, first look or asked for. A later
- * row of the same person is either a correction of the earlier one or a look that they were asked for afterwards.
+ * row of the same person is either a correction of the earlier one or a look that they were asked for afterwards. Those of people who
+ * are left out of the consensus are marked.
  */
 export async function listEntryAnswers(db: Kysely<DB>, campaignId: number, candidateIds: readonly number[]) {
   return db
@@ -245,6 +261,11 @@ export async function listEntryAnswers(db: Kysely<DB>, campaignId: number, candi
       'grade.remark',
       'membership.pseudonym as by',
     ])
+    .select(
+      sql<0 | 1>`coalesce((select decision.left_out from left_out decision
+        where decision.campaign_id = grade.campaign_id and decision.person_id = grade.person_id
+        order by decision.id desc limit 1), 0)`.as('leftOut'),
+    )
     .where(inCampaign('grade.campaign_id', campaignId))
     .where('grade.candidate_id', 'in', among(candidateIds))
     .where('grade.occasion', 'in', ['first', 'asked'])

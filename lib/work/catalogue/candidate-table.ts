@@ -14,6 +14,7 @@ import { noteShown } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
+import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { asListed, saysJudgement, type ListedCandidate } from './list-candidates'
 
 export interface CandidateTableRow extends ListedCandidate {
@@ -28,6 +29,8 @@ export interface CandidateTable {
   count: number
   /** Candidates without any filter. */
   all: number
+  /** The rule in force is that of reliability: rows are told by their lens probability. */
+  byReliability: boolean
 }
 
 export interface CandidateTableInput {
@@ -75,6 +78,7 @@ export async function candidateTable(
   return {
     count,
     all,
+    byReliability: (await ruleInForce(db, permit.campaign.id)).method === 'reliability',
     rows: listed.map((row) => ({
       ...row,
       votes: row.withheld ? null : counts(row.id),

@@ -23,6 +23,8 @@ export interface CatalogueEntry {
   /** Mean and population standard deviation of the points (A 3 to N 0) of the votes below. */
   mean: number | null
   spread: number | null
+  /** Of a lens, as of the verdict's run; null by the mean method, and where there is no verdict. */
+  probability: number | null
   votes: Record<GradeLetter, number>
   /** A ruling stands over the verdict. */
   decidedBy: StateCause
@@ -43,7 +45,7 @@ const PAGE = 500
  * the database between two pages, memory does not grow with the catalogue, and each entry is as of the moment its page is read.
  *
  * Votes, mean, spread and class of one entry are counted from the same grades, so that every row agrees with itself also
- * while a run of the consensus is still to come.
+ * while a run of the consensus is still to come. Grades of people who are left out of the consensus are in none of them.
  */
 export async function* catalogueEntries(
   db: Kysely<DB>,
@@ -73,8 +75,9 @@ function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryAnswer[]
 
 function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry {
   const votes = { A: 0, B: 0, C: 0, N: 0, U: 0 }
-  for (const { grade } of answers) votes[grade] += 1
-  const points = gradesAmong(answers.map(({ grade }) => grade)).map((grade) => GRADE_POINTS[grade])
+  const counted = answers.filter(({ leftOut }) => leftOut === 0)
+  for (const { grade } of counted) votes[grade] += 1
+  const points = gradesAmong(counted.map(({ grade }) => grade)).map((grade) => GRADE_POINTS[grade])
   const { mean, spread } = meanAndSpread(points)
   const ruled = row.rulingId !== null
   return {
@@ -86,11 +89,12 @@ function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry
     gradeClass: gradeClass(row.rulingGrade, mean),
     mean,
     spread,
+    probability: row.probability,
     votes,
     decidedBy: ruled ? 'ruling' : 'verdict',
     reason: (ruled ? row.rulingReason : row.verdictReason) ?? '',
     remarks: answers.flatMap(({ by, remark }) => (remark ? [{ by, remark }] : [])),
-    tags: countTags(answers),
+    tags: countTags(counted),
     lensRedshift: row.lensRedshift,
     sourceRedshift: row.sourceRedshift,
     enteredAt: row.enteredAt ?? row.stateSince,

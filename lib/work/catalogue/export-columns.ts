@@ -65,6 +65,15 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
     value: (entry) => entry.spread,
   },
   {
+    name: 'probability',
+    datatype: 'double',
+    ucd: 'stat.probability',
+    description:
+      'Probability that this is a lens, from the grades weighed by the reliability of the graders, as of the run of its verdict; ' +
+      'empty by the mean method',
+    value: (entry) => entry.probability,
+  },
+  {
     name: 'n_grades',
     datatype: 'int',
     ucd: 'meta.number',

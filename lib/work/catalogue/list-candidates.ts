@@ -16,6 +16,8 @@ export interface ListedVerdict {
   /** Points, A 3 to N 0; null without grades. */
   mean: number | null
   spread: number | null
+  /** Of a lens; null by the mean method. */
+  probability: number | null
   reason: string
 }
 
@@ -100,7 +102,15 @@ export function saysJudgement({ state, verdict }: ListedCandidate): boolean {
 }
 
 function verdictOf(row: CandidateRow): ListedVerdict | null {
-  const { outcome, grades, cannotJudge, mean, spread, reason } = row
+  const { outcome, grades, cannotJudge, mean, spread, probability, reason } = row
   if (outcome === null) return null
-  return { outcome, grades: grades ?? 0, cannotJudge: cannotJudge ?? 0, mean, spread, reason: reason ?? '' }
+  return {
+    outcome,
+    grades: grades ?? 0,
+    cannotJudge: cannotJudge ?? 0,
+    mean,
+    spread,
+    probability,
+    reason: reason ?? '',
+  }
 }
