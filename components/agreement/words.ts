@@ -14,7 +14,9 @@ export function shareInWords({ value, interval }: ShareEstimate): string {
 
 /** `0.61`, with a true minus sign; `–` for none. */
 export function coefficient(value: number | null): string {
-  return value === null ? '–' : value.toFixed(2).replace('-', '−')
+  if (value === null) return '–'
+  const text = value.toFixed(2)
+  return text === '-0.00' ? '0.00' : text.replace('-', '−')
 }
 
 /** `0.61 (0.55 to 0.67)` */

@@ -37,13 +37,16 @@ export function MatrixPlot({
   const longest = Math.max(0, ...labels.map((label) => label.length))
   const labelWidth = Math.min(120, longest * 7 + 12)
   const draw = (available: number) => {
-    const size = Math.max(LEAST_CELL, Math.min(MOST_CELL, (available - labelWidth - 2) / Math.max(1, labels.length)))
+    const sizeWith = (overhang: number) =>
+      Math.max(LEAST_CELL, Math.min(MOST_CELL, (available - labelWidth - overhang) / Math.max(1, labels.length)))
+    // Names stand level where they fit, else they lean, and the last one over the edge.
+    const lean = longest * 7 > sizeWith(2)
+    const overhang = lean ? longest * 5 : 2
+    const size = sizeWith(overhang)
     const height = Math.min(size, 44)
-    // Names stand level where they fit, else they lean.
-    const lean = longest * 7 > size
     const head = lean ? 14 + longest * 5 : 22
     const top = corner.length * 17 + head + 4
-    const width = labelWidth + size * labels.length + (lean ? longest * 4 : 2)
+    const width = labelWidth + size * labels.length + overhang
     return {
       width: width > available ? width : undefined,
       height: top + height * labels.length + 4,
