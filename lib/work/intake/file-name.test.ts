@@ -13,6 +13,7 @@ describe('the name of a delivered file', () => {
 
   it.each([
     ['a\u0000b.fits', /control characters/],
+    ['a\u202eb.fits', /control characters/],
     ['a\nb.fits', /control characters/],
     ['../secret.fits', /'\.\.'/],
     ['a/..\\b.fits', /'\.\.'/],

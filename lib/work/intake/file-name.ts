@@ -4,6 +4,9 @@ export const MOST_NAME_CHARACTERS = 255
 
 const FITS_ENDINGS = /\.(fits|fit|fts|fz|gz)$/i
 
+/** Control characters, line ends of Unicode, and those that turn the direction of what follows, so that a name shows as another. */
+export const UNSEEN = /[\u0000-\u001f\u007f-\u009f\u2028-\u202e\u2066-\u2069]/
+
 /**
  * The name under which a delivered file is kept: folders stay, parted by `/`. Empty parts and `.` are dropped, Unicode is
  * composed (NFC) so that one name has one spelling.
@@ -11,7 +14,7 @@ const FITS_ENDINGS = /\.(fits|fit|fts|fz|gz)$/i
  */
 export function cleanFileName(raw: string): string {
   const name = raw.normalize('NFC').replaceAll('\\', '/')
-  if (/[\u0000-\u001f\u007f-\u009f\u2028\u2029]/.test(name)) {
+  if (UNSEEN.test(name)) {
     throw invalid('The file name holds control characters. Rename the file and send it again.')
   }
   const parts = name.split('/').flatMap((part) => (part === '' || part === '.' ? [] : part))

@@ -1,6 +1,6 @@
 import { readCsv, type CsvTable } from '@/lib/science/formats/csv'
 import { parseDeclination, parseRightAscension } from '@/lib/science/sky/coordinates'
-import { baseName } from './file-name'
+import { baseName, UNSEEN } from './file-name'
 import { manifestColumns, type ChosenColumns, type ManifestColumn, type ManifestHeaders } from './manifest-columns'
 
 export interface ManifestEntry {
@@ -109,9 +109,7 @@ const MOST_PATH_CHARACTERS = 2000
 function noName(what: string, text: string | null, most: number): string | null {
   if (text === null) return null
   if (text.length > most) return `the name of the ${what} has ${text.length.toLocaleString('en')} characters`
-  return /[\u0000-\u001f\u007f-\u009f\u2028\u2029]/.test(text)
-    ? `the name of the ${what} holds control characters`
-    : null
+  return UNSEEN.test(text) ? `the name of the ${what} holds control characters` : null
 }
 
 /** `10,5` is 10.5 where tables part their columns by semicolons; a number with thousands set off has more commas or a point. */

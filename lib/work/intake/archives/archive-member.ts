@@ -1,5 +1,5 @@
 import { Problem } from '@/lib/platform/problems/problem'
-import { cleanFileName, isArchiveName, isHiddenName } from '../file-name'
+import { cleanFileName, isArchiveName, isHiddenName, UNSEEN } from '../file-name'
 import type { Refusal } from '../refusals'
 
 /** A file inside an archive, its bytes to be streamed once and in order. */
@@ -55,6 +55,6 @@ export function memberName(archive: string, raw: string): { name: string } | { p
 }
 
 const shown = (raw: string): string => {
-  const text = raw.replace(/[\u0000-\u001f\u007f-\u009f\u2028\u2029]/g, '\ufffd')
+  const text = raw.replace(new RegExp(UNSEEN, 'g'), '\ufffd')
   return text.length > 80 ? `${text.slice(0, 80)}…` : text
 }
