@@ -22,7 +22,7 @@ function wordsOf(session: BenchSession, resting: boolean, waiting: number): { ti
   if (session.supply === 'failed') {
     return {
       title: 'The next candidates did not come',
-      text: 'The server cannot be reached just now. What you graded is kept in this browser until it is saved; this page tries again by itself.',
+      text: 'The server cannot be reached just now, or you are signed out. What you graded is kept in this browser until it is saved; this page tries again by itself.',
     }
   }
   if (session.supply === 'asking' && left > 0) return { title: 'Fetching the next candidates', text: '' }
@@ -75,6 +75,11 @@ export function BenchRest({
             </Button>
           ) : null}
           {session.given.length > 0 ? <Button onClick={onLookBack}>Look back at the last one</Button> : null}
+          {session.supply === 'failed' && !resting ? (
+            <a className={link} href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/bench`)}`}>
+              Sign in and come back here
+            </a>
+          ) : null}
           {lead && !session.imaged ? (
             <Link prefetch={false} className={link} href={`/campaigns/${slug}/intake`}>
               To the intake

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import type { GradeLetter } from '@/db/schema/grading'
-import { supply } from './_candidates'
+import { benchCandidate, supply } from './_candidates'
 import {
   currentDraft,
   currentLook,
@@ -207,5 +207,51 @@ describe('grades of an earlier visit', () => {
     })
     expect(onBench(session)).toBe(2)
     expect(session).toMatchObject({ view: 'colour', counts: { given: 6, left: 2 } })
+  })
+})
+
+describe('what comes from outside the sitting', () => {
+  const answer = { grade: 'C' as const, tags: [], remark: '', reason: null }
+  const earlier = (id: number) => ({ candidate: benchCandidate(id), answer, view: null, seconds: 1, at: 0 })
+
+  it('looks from before a reload come before those since, whoever looks back stays where they are', () => {
+    const session = act(openSession(supply([5, 6])), grade('A'), { type: 'went back' })
+    const more = act(session, { type: 'recalled', looks: [earlier(1), earlier(2)], drafts: {} })
+    expect(letters(more)).toEqual(['1C', '2C', '5A'])
+    expect(onBench(more)).toBe(5)
+    expect(onBench(act(more, { type: 'went back' }, { type: 'went back' }))).toBe(1)
+  })
+
+  it('a look from before a reload is none where its candidate is on the bench again', () => {
+    const session = act(openSession(supply([5, 6])), { type: 'recalled', looks: [earlier(6)], drafts: {} })
+    expect(letters(session)).toEqual([])
+  })
+
+  it('words from before a reload do not replace those written since', () => {
+    const session = act(
+      openSession(supply([5])),
+      { type: 'remark written', remark: 'new' },
+      { type: 'recalled', looks: [], drafts: { 5: { tags: [], remark: 'old' }, 6: { tags: [], remark: 'other' } } },
+    )
+    expect(session.drafts).toMatchObject({ 5: { remark: 'new' }, 6: { remark: 'other' } })
+  })
+
+  it('a grade of another tab takes its candidate away and is counted once; a correction changes what is looked back at', () => {
+    const session = act(openSession(supply([1, 2, 3])), grade('A'), {
+      type: 'given elsewhere',
+      grades: [
+        { candidateId: 2, answer, first: true },
+        { candidateId: 1, answer, first: false },
+      ],
+    })
+    expect(onBench(session)).toBe(3)
+    expect(letters(session)).toEqual(['1C'])
+    expect(session.counts).toEqual({ given: 2, left: 1 })
+  })
+
+  it('what stands at the server replaces what was remembered, and nothing standing takes the look away', () => {
+    const session = act(openSession(supply([1, 2])), grade('A'))
+    expect(letters(act(session, { type: 'stands', candidateId: 1, answer }))).toEqual(['1C'])
+    expect(letters(act(session, { type: 'stands', candidateId: 1, answer: null }))).toEqual([])
   })
 })

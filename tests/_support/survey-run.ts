@@ -31,6 +31,11 @@ export class SurveyRun {
     this.#cookie = await signInCookie(this.#server.url)
   }
 
+  /** Where the server listens now. */
+  get url(): string {
+    return this.#server.url
+  }
+
   get residentBytes(): number {
     try {
       const status = readFileSync(`/proc/${this.#server.pid}/status`, 'utf8')

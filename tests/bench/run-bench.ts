@@ -9,6 +9,7 @@ import { benchIntake } from './bench-intake'
 import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
+import { benchPage } from './bench-page'
 import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
@@ -20,6 +21,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   votable: benchVotable,
   lens: benchLens,
   consensus: benchConsensus,
+  'bench-page': benchPage,
 }
 
 process.env.RINGSIDE_PEERS ??= 'fixtures/peers'

@@ -4,15 +4,13 @@ import path from 'node:path'
 import type { Browser, BrowserContext, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { openDatabase } from '@/db/connection'
-import { smallSearch } from '@/tests/_support/survey-files'
-import { EMAIL, PASSWORD, seedSite, signInCookie, SLUG } from '@/tests/_support/survey-site'
+import { BENCH, headingOf, signIn, startBenchSite, untilGradable } from './_bench-site'
 import { collectErrors, launchBrowser } from './_browser'
-import { makeDataFolder, removeDataFolder, startTestServer, type TestServer } from './_server'
+import { removeDataFolder, startTestServer, type TestServer } from './_server'
 
 const CANDIDATES = 90
 const WARM = 6
 const LETTERS = ['n', 'c', 'b', 'a', 'n', 'u'] as const
-const BENCH = `/campaigns/${SLUG}/bench`
 
 let server: TestServer
 let browser: Browser
@@ -21,32 +19,14 @@ let page: Page
 const given = new Map<string, string>()
 let errors: string[] = []
 
-const heading = () => page.locator('h1').textContent()
+const heading = () => headingOf(page)
 const saveLine = () => page.locator('[data-save-line]').first().textContent()
-
-async function sendFiles(): Promise<void> {
-  const cookie = await signInCookie(server.url)
-  for (const file of smallSearch(CANDIDATES)) {
-    const url = `${server.url}/api/campaigns/${SLUG}/files/${file.name}`
-    const answer = await fetch(url, { method: 'PUT', headers: { cookie }, body: Buffer.from(file.bytes()) })
-    if (!answer.ok) throw new Error(`${file.name}: ${answer.status} ${await answer.text()}`)
-  }
-  const imaged = async () => {
-    const answer = await fetch(`${server.url}/api/campaigns/${SLUG}/files?limit=1`, { headers: { cookie } })
-    return ((await answer.json()) as { summary: { imaged: number } }).summary.imaged
-  }
-  await expect.poll(imaged, { timeout: 120_000, interval: 300 }).toBe(3 * CANDIDATES)
-}
 
 /** Grades what is on the stage, once its picture is there and the moment has passed in which a key is not heard. */
 async function gradeOne(): Promise<void> {
   const name = (await heading())!
   const letter = LETTERS[given.size % LETTERS.length]
-  await page.waitForFunction(() => {
-    const image = document.querySelector<HTMLImageElement>('figure img[aria-hidden="false"]')
-    return image?.complete && image.naturalWidth > 0
-  })
-  await page.waitForTimeout(140)
+  await untilGradable(page)
   await page.keyboard.press(letter)
   await page.waitForFunction((before) => document.querySelector('h1')?.textContent !== before, name)
   expect(given.has(name), `${name} came twice`).toBe(false)
@@ -85,19 +65,10 @@ async function gradesInDatabase() {
 }
 
 beforeAll(async () => {
-  const dataFolder = await makeDataFolder()
-  await seedSite(dataFolder)
-  server = await startTestServer(dataFolder)
-  await sendFiles()
+  server = await startBenchSite(CANDIDATES)
   browser = await launchBrowser()
   context = await browser.newContext({ viewport: { width: 1440, height: 900 } })
-  page = await context.newPage()
-  await page.goto(`${server.url}/signin`, { waitUntil: 'networkidle' })
-  await page.getByLabel('E-mail').fill(EMAIL)
-  await page.getByLabel('Password', { exact: true }).fill(PASSWORD)
-  await page.keyboard.press('Enter')
-  await page.waitForURL((address) => address.pathname !== '/signin')
-  await page.close()
+  await signIn(context, server.url)
 })
 
 afterAll(async () => {
