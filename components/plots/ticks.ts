@@ -7,7 +7,7 @@ const STEPS = [
 ]
 
 /** Step of about `about` ticks over the span: 1, 2 or 5 times a power of ten; 1 for a span of nothing. */
-export function tickStep(span: number, about: number): number {
+function tickStep(span: number, about: number): number {
   if (!(span > 0) || about < 1) return 1
   const rough = span / about
   const power = 10 ** Math.floor(Math.log10(rough))

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
 import { decisionRows, giveGrades } from './_give-grade'
 import { leaveOut } from './leave-out'
@@ -51,6 +52,16 @@ describe('what leaving a grader out would change', () => {
     const back = await previewLeaveOut(db, permit, graders[3].id)
     expect(back.leftOut).toMatchObject({ reason: 'Keys swapped' })
     expect(back.moves).toEqual(expect.arrayContaining([{ from: 'open', to: 'confirmed', candidates: 1 }]))
+  })
+
+  it('counts apart the verdicts under rulings, which keep their candidates as they are', async () => {
+    const { db, permit, graders } = await judgedScenario()
+    const torn = await db.selectFrom('candidate').select('id').where('name', '=', 'torn').executeTakeFirstOrThrow()
+    await ruleOnCandidate(db, permit, torn.id, { outcome: 'set aside', grade: null, reason: 'A spiral arm' })
+    const preview = await previewLeaveOut(db, permit, graders[3].id)
+    expect(preview.keptByRuling).toBe(1)
+    expect(preview.moves).not.toContainEqual(expect.objectContaining({ to: 'confirmed' }))
+    expect(preview.moves).toHaveLength(2)
   })
 
   it('changes nothing where the person has not graded', async () => {

@@ -14,7 +14,7 @@ import { judgeRun } from './compute-run'
 import { InputDigest } from './input-digest'
 import { readGrades } from './read-grades'
 
-export interface StateMove {
+interface StateMove {
   from: CandidateState
   to: CandidateState
   candidates: number

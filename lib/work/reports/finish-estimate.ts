@@ -14,9 +14,9 @@ export interface FinishEstimate {
   reason: string | null
 }
 
-export const PACE_DAYS = 7
+const PACE_DAYS = 7
 /** Fewer days than this with a look say nothing of a pace. Our choice, no source. */
-export const LEAST_ACTIVE_DAYS = 3
+const LEAST_ACTIVE_DAYS = 3
 const DAY_MS = 86_400_000
 const RESAMPLES = 2000
 

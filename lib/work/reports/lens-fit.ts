@@ -17,7 +17,7 @@ import { gradeWeight, logOddsOf } from '@/lib/science/agreement/posterior'
 import type { GradeSheet } from './grade-sheet'
 
 /** Whose reliabilities these are. */
-export type FitSource = 'run' | 'report'
+type FitSource = 'run' | 'report'
 
 export interface LensFit {
   source: FitSource

@@ -23,7 +23,7 @@ export interface PairTables {
 }
 
 /** Place of a pair among all; first < second. */
-export function pairIndex(first: number, second: number, graders: number): number {
+function pairIndex(first: number, second: number, graders: number): number {
   return first * graders - (first * (first + 1)) / 2 + second - first - 1
 }
 
