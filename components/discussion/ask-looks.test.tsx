@@ -76,7 +76,7 @@ describe('looks that were asked for', () => {
     render(<AskList asks={asks} withdraw={withdraw} />)
     const items = within(screen.getByRole('list', { name: 'Looks asked for' })).getAllByRole('listitem')
     expect(items.map((item) => item.textContent)).toEqual([
-      'curlew has looked again, by avocet, 1 Dec 2026, 12:00 UTC“Mind the arc.”',
+      'curlew has looked, asked by avocet, 1 Dec 2026“Mind the arc.”',
       expect.stringContaining('dunlin is asked for a look'),
     ])
     await userEvent.setup().click(screen.getByRole('button', { name: 'Withdraw the look asked of dunlin' }))

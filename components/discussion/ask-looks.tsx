@@ -1,10 +1,11 @@
 'use client'
 
-import { moment } from '@/components/campaigns/in-words'
+import { day, moment } from '@/components/campaigns/in-words'
 import { FormNote } from '@/components/people/form-note'
 import { useKeptForm, type FormAction } from '@/components/people/use-kept-form'
 import { Button } from '@/components/ui/button'
 import { TextArea } from '@/components/ui/field'
+import { TextButton } from '@/components/ui/text-button'
 import { LONGEST_NOTE } from '@/lib/work/discussion/ask-input'
 import type { Ask, Askable } from '@/lib/work/discussion/list-asks'
 
@@ -13,12 +14,12 @@ export function AskList({ asks, withdraw }: { asks: Ask[]; withdraw: FormAction 
   const shown = asks.filter(({ state }) => state !== 'withdrawn')
   if (shown.length === 0) return null
   return (
-    <ul aria-label="Looks asked for" className="border-t border-line">
+    <ul aria-label="Looks asked for">
       {shown.map((ask) => (
         <li key={ask.id} className="flex flex-wrap items-baseline gap-x-3 border-b border-line py-1.5 text-small">
           <span className="font-semibold">{ask.of}</span>{' '}
-          <span className="text-note text-mute">
-            {ask.state === 'answered' ? 'has looked again' : 'is asked for a look'}, by {ask.by}, {moment(ask.at)}
+          <span className="text-note text-mute" title={moment(ask.at)}>
+            {ask.state === 'answered' ? 'has looked, asked' : 'is asked for a look'} by {ask.by}, {day(ask.at)}
           </span>
           {ask.state === 'open' && withdraw ? <Withdraw ask={ask} action={withdraw} /> : null}
           {ask.note ? (
@@ -37,15 +38,9 @@ function Withdraw({ ask, action }: { ask: Ask; action: FormAction }) {
   return (
     <form {...formProps} className="ml-auto">
       <input type="hidden" name="ask" value={ask.id} />
-      <Button
-        type="submit"
-        tone="bare"
-        disabled={pending}
-        aria-label={`Withdraw the look asked of ${ask.of}`}
-        className="min-h-7 px-1 py-0"
-      >
+      <TextButton type="submit" disabled={pending} aria-label={`Withdraw the look asked of ${ask.of}`}>
         Withdraw
-      </Button>
+      </TextButton>
       {state.message ? (
         <span role="alert" className="block text-note text-alarm">
           {state.message}

@@ -112,18 +112,14 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
           </div>
           {judgement?.why && judgement.verdict ? (
             <Section title={`Why the verdict is ‘${judgement.verdict.outcome}’`}>
-              <p className="max-w-prose">{judgement.verdict.reason}</p>
+              {judgement.verdict.reason === judgement.stateReason ? null : (
+                <p className="max-w-prose">{judgement.verdict.reason}</p>
+              )}
               <WhyReliability why={judgement.why} verdict={judgement.verdict} />
               <p className="text-note text-mute">Verdict of {moment(judgement.verdict.at)}.</p>
             </Section>
           ) : null}
           <CandidateFacts evidence={evidence} />
-          {talk ? (
-            <section id="discussion" className="flex scroll-mt-6 flex-col gap-2.5 border-t border-line pt-5">
-              <h2 className="text-small font-semibold text-mute">Discussion</h2>
-              <Discussion thread={talk.thread} action={talk.post} draftKey={talk.draftKey} />
-            </section>
-          ) : null}
         </div>
         <div className="flex min-w-0 flex-col gap-7">
           {judgement ? <JudgementColumn judgement={judgement} talk={talk} /> : <Withheld slug={slug} asked={asked} />}
@@ -142,6 +138,12 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
           ) : null}
         </div>
       </div>
+      {talk ? (
+        <section id="discussion" className="flex scroll-mt-6 flex-col gap-2.5 border-t border-line pt-5 lg:mr-[24rem]">
+          <h2 className="text-small font-semibold text-mute">Discussion</h2>
+          <Discussion thread={talk.thread} action={talk.post} draftKey={talk.draftKey} />
+        </section>
+      ) : null}
       <VisualGradeCaution />
     </div>
   )

@@ -15,12 +15,12 @@ export function lineScale(
   return (logOdds) => Math.min(1, Math.max(0, (logOdds - low) / (high - low)))
 }
 
-/** Probabilities worth a tick, of those that lie on the line: not nearer to each other than a twelfth of it. */
-export function ticksOf(scale: (logOdds: number) => number): number[] {
+/** Probabilities worth a tick, of those that lie on the line: not nearer to each other than `apart` of it. */
+export function ticksOf(scale: (logOdds: number) => number, apart = 1 / 9): number[] {
   const ticks: number[] = []
   for (const probability of [0.5, 0.9, 0.1, 0.99, 0.01, 0.999, 0.001, 0.9999, 0.0001, 0.99999, 0.00001]) {
     const at = scale(logOddsOf(probability))
-    const free = ticks.every((other) => Math.abs(scale(logOddsOf(other)) - at) > 1 / 9)
+    const free = ticks.every((other) => Math.abs(scale(logOddsOf(other)) - at) > apart)
     if (at > 0.02 && at < 0.98 && free) ticks.push(probability)
   }
   return ticks.sort((a, b) => a - b)

@@ -58,14 +58,14 @@ export function OddsTrack({
 }
 
 /** Probabilities along the line, at their log odds. */
-export function OddsAxis({ ticks }: { ticks: { at: number; label: string }[] }) {
+export function OddsAxis({ ticks }: { ticks: { at: number; label: string; always: boolean }[] }) {
   return (
     <div className="relative h-9 text-[0.6875rem] text-mute">
-      {ticks.map(({ at, label }) => (
+      {ticks.map(({ at, label, always }) => (
         <span
           key={label}
           style={{ left: `${(100 * at).toFixed(2)}%` }}
-          className="figures absolute top-0 -translate-x-1/2 before:mx-auto before:block before:h-1 before:w-px before:bg-edge"
+          className={`figures absolute top-0 -translate-x-1/2 before:mx-auto before:block before:h-1 before:w-px before:bg-edge ${always ? '' : 'max-sm:hidden'}`}
         >
           {label}
         </span>

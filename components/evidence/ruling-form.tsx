@@ -126,7 +126,7 @@ export function RulingForm({
         </div>
         <Button tone="lamp" type="submit" disabled={pending} className="min-w-36">
           {pending ? 'Ruling…' : (chosen?.action ?? 'Rule')}
-          {many !== undefined && !pending ? `, ${many}` : ''}
+          {many !== undefined && !pending ? ` (${many})` : ''}
         </Button>
       </div>
       {reasonFault ? (

@@ -39,7 +39,7 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
                 <span>confirmed</span>
               </span>
             </th>
-            <th className="py-1 pl-3 text-right font-normal">
+            <th className="whitespace-nowrap py-1 pl-3 text-right font-normal">
               <abbr title="natural logarithm of the odds of a lens" className="no-underline">
                 log odds
               </abbr>
@@ -80,7 +80,7 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
           <tr aria-hidden="true">
             <td />
             <td className="p-0">
-              <OddsAxis ticks={ticksOf(scale).map((at) => ({ at: scale(logOddsOf(at)), label: String(at) }))} />
+              <OddsAxis ticks={axisOf(scale)} />
             </td>
             <td />
           </tr>
@@ -112,6 +112,12 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
       {why.rates.length > 0 ? <RatesOf why={why} /> : null}
     </div>
   )
+}
+
+/** Where the line is short, as on a phone, only ticks that stand far apart. */
+function axisOf(scale: (logOdds: number) => number) {
+  const few = ticksOf(scale, 1 / 3)
+  return ticksOf(scale).map((at) => ({ at: scale(logOddsOf(at)), label: String(at), always: few.includes(at) }))
 }
 
 function StepRow({

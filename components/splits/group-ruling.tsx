@@ -5,7 +5,7 @@ import { counted } from '@/components/campaigns/in-words'
 import { RulingForm } from '@/components/evidence/ruling-form'
 import { FormNote } from '@/components/people/form-note'
 import { useKeptForm } from '@/components/people/use-kept-form'
-import { Button } from '@/components/ui/button'
+import { TextButton } from '@/components/ui/text-button'
 import type { FormState } from '@/components/ui/form-state'
 import { describeOutcome } from '@/lib/work/rulings/describe-ruling'
 import { writeCases, type GroupRuling } from '@/lib/work/rulings/group-input'
@@ -45,9 +45,7 @@ export function GroupRulingPanel({
         <h3 className="text-small font-semibold">
           {cases.length === 1 ? 'One split is selected' : `One ruling for the ${cases.length} selected`}
         </h3>
-        <Button tone="bare" onClick={onClear} className="min-h-7 py-0">
-          Select none
-        </Button>
+        <TextButton onClick={onClear}>Select none</TextButton>
       </div>
       <ol aria-label="Selected" className="flex max-h-44 flex-wrap gap-1.5 overflow-y-auto p-0.5">
         {cases.map((one) => (
@@ -119,14 +117,14 @@ export function GroupResult({
               name="cases"
               value={writeCases(ruled.map(({ candidateId, rulingId }) => ({ candidateId, lastRulingSeen: rulingId })))}
             />
-            <Button type="submit" tone="bare" disabled={pending} className="min-h-7 px-0 py-0">
+            <TextButton type="submit" disabled={pending}>
               Take {ruled.length === 1 ? 'it' : 'them all'} back
-            </Button>
+            </TextButton>
           </form>
         ) : null}
-        <Button tone="bare" onClick={onDismiss} className="ml-auto min-h-7 py-0">
+        <TextButton onClick={onDismiss} className="ml-auto">
           Close
-        </Button>
+        </TextButton>
       </div>
       {refused.length > 0 ? (
         <ul className="flex max-h-28 flex-col gap-0.5 overflow-y-auto text-note text-mute">

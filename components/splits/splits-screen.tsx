@@ -10,7 +10,8 @@ import { counted } from '@/components/campaigns/in-words'
 import type { FormState } from '@/components/ui/form-state'
 import type { Talk } from '@/components/discussion/talk'
 import type { FormAction } from '@/components/people/use-kept-form'
-import { Button, ButtonLink } from '@/components/ui/button'
+import { ButtonLink } from '@/components/ui/button'
+import { TextButton } from '@/components/ui/text-button'
 import { EmptyState, Notice } from '@/components/ui/notice'
 import type { NewestRun } from '@/lib/work/consensus/newest-run'
 import type { CandidateEvidence } from '@/lib/work/rulings/candidate-evidence'
@@ -162,13 +163,9 @@ export function SplitsScreen(props: SplitsScreenProps) {
             </p>
           )}
           {place >= 0 && alike.length > 1 ? (
-            <Button
-              tone="bare"
-              onClick={() => selection.add(alike)}
-              className="min-h-7 justify-start px-0 py-0 text-left text-note font-normal"
-            >
+            <TextButton onClick={() => selection.add(alike)}>
               Select the {alike.length} {alikeInWords(splits.cases[place])}
-            </Button>
+            </TextButton>
           ) : null}
         </header>
         <SplitList splits={splits} chosenId={chosenId} hrefOf={hrefOf} selection={selection} />

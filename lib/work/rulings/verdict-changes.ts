@@ -84,10 +84,12 @@ function oneMore(basis: VerdictBasis, newcomer: GraderRates, now: Outcome): stri
       `${probabilityBeside(low.probability)} (N) and ${probabilityBeside(high.probability)} (A).`
     )
   }
-  const each = changing.map(
-    ({ grade, outcome, probability }) => `${outcome} with ${grade} (${probabilityBeside(probability)})`,
-  )
-  return `One more grade of somebody new would make it ${inARow(each, 'or')}.`
+  const each = [...new Set(changing.map(({ outcome }) => outcome))].map((outcome) => {
+    const grades = changing.filter((one) => one.outcome === outcome)
+    const letters = grades.map(({ grade, probability }) => `${grade} (${probabilityBeside(probability)})`)
+    return `${outcome} with ${inARow(letters, 'or')}`
+  })
+  return `One more grade of somebody new would make it ${inARow(each)}.`
 }
 
 function otherRates({ rule }: VerdictBasis, evidence: number, outcome: Outcome): string[] {
@@ -110,7 +112,7 @@ function otherRates({ rule }: VerdictBasis, evidence: number, outcome: Outcome):
         ]
       : []),
     ...(missedLens < 1
-      ? [`set aside by one that lets ${share(missedLens)} of lenses be set aside (this one ${rule.missedLens})`]
+      ? [`set aside by a rule that lets ${share(missedLens)} of lenses be set aside (this one ${rule.missedLens})`]
       : []),
   ]
   return ways.length > 0 ? [`These grades would be ${inARow(ways, 'or')}.`] : []
