@@ -1,7 +1,9 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { LeftOut } from '../schema/consensus'
+import type { CandidateState } from '../schema/intake'
 import type { IsoTime } from '../schema/values'
+import { among, inCampaign } from './by-ids'
 
 /** The newest decision on the person in the campaign; null before the first, when their grades count. */
 export async function findLeftOut(db: Kysely<DB>, campaignId: number, personId: number): Promise<LeftOut | null> {
@@ -87,4 +89,56 @@ export async function countLooksOf(db: Kysely<DB>, campaignId: number, personId:
     .where('replaces', 'is', null)
     .executeTakeFirstOrThrow()
   return row.n
+}
+
+export interface LookNeed {
+  id: number
+  state: CandidateState
+  settled: 0 | 1
+  /** A ruling stands over verdicts, also one that reopened. */
+  ruled: 0 | 1
+  looksGiven: number
+  looksAsked: number
+  /** Standing first looks of people who are left out. */
+  looksLost: number
+}
+
+/** A page of the campaign's candidates by id, calibration stamps left out. */
+export async function listLookNeeds(
+  db: Kysely<DB>,
+  page: { campaignId: number; after: number; limit: number },
+  leftOut: readonly number[],
+): Promise<LookNeed[]> {
+  return db
+    .selectFrom('candidate')
+    .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
+    .select([
+      'candidate.id',
+      'candidate.state',
+      'candidate.settled',
+      'candidate.grades_given as looksGiven',
+      'candidate.looks_asked as looksAsked',
+    ])
+    .select(sql<0 | 1>`ruling.outcome is not null and ruling.outcome <> 'by verdict'`.as('ruled'))
+    .select(
+      sql<number>`(select count(*) from grade where grade.candidate_id = candidate.id and grade.occasion = 'first'
+        and grade.replaces is null and grade.person_id in ${among(leftOut)})`.as('looksLost'),
+    )
+    .where('candidate.id', '>', page.after)
+    .where(inCampaign('candidate.campaign_id', page.campaignId))
+    .where('candidate.truth', 'is', null)
+    .orderBy('candidate.id')
+    .limit(page.limit)
+    .execute()
+}
+
+export async function setLooksAsked(
+  db: Kysely<DB>,
+  wants: readonly { id: number; looksAsked: number }[],
+): Promise<void> {
+  if (wants.length === 0) return
+  await sql`
+    update candidate set looks_asked = w.value ->> 1
+    from json_each(${JSON.stringify(wants.map(({ id, looksAsked }) => [id, looksAsked]))}) w
+    where candidate.id = w.value ->> 0`.execute(db)
 }

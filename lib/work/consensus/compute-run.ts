@@ -65,7 +65,7 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
   const model = input.rule.method === 'reliability' ? await fitModel(grades, read.leftOut) : null
   const judge = await judgeFor(db, input, grades, model)
   const { ids, truth, table } = grades
-  const counts: Uint16Array[] = []
+  const counts: number[][] = []
   const changed: NewVerdict[] = []
   const outcomes = { open: 0, split: 0, confirmed: 0, 'set aside': 0 }
   const totals = { candidates: 0, grades: 0, cannotJudge: 0 }
@@ -92,7 +92,14 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
       // Nothing is said of a candidate that nobody has looked at, unless something was said before.
       const looks = judgement.grades + judgement.cannotJudge
       if ((looks > 0 || candidate.outcome !== null) && differs(candidate)) {
-        changed.push({ candidateId: candidate.id, ...judgement, reason: reason() })
+        changed.push({
+          candidateId: candidate.id,
+          ...judgement,
+          // Made when it is written: a hundred thousand reasons are a hundred megabytes.
+          get reason() {
+            return reason()
+          },
+        })
       }
     }
   }
@@ -122,8 +129,8 @@ async function judgeFor(
   return judgeByReliability(rule, grades, model, (personId) => pseudonyms.get(personId) ?? 'a member')
 }
 
-function countPoints(cells: Int32Array): Uint16Array {
-  const counts = new Uint16Array(GRADES.length)
+function countPoints(cells: Int32Array): number[] {
+  const counts = GRADES.map(() => 0)
   for (const cell of cells) counts[GRADE_POINTS[GRADES[cell % GRADES.length]]] += 1
   return counts
 }

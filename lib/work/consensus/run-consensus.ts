@@ -22,8 +22,9 @@ import { conflict } from '@/lib/platform/problems/problem'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { applyVerdicts } from './apply-state'
-import { judgeRun, readRun, type ComputedRun } from './compute-run'
+import { judgeRun, readRun, type ComputedRun, type ReadRun, type RunInput } from './compute-run'
 import { giveDesignations } from './give-designations'
+import { makeUpLooks } from './make-up-looks'
 import { refreshEstimates } from './refresh-estimates'
 
 export interface RunAnswer {
@@ -63,7 +64,7 @@ async function runCampaign(db: Kysely<DB>, campaign: Campaign, startedBy: number
     const read = await readRun(db, input)
     if (before && before.rule_id === rule.id && before.input_digest === read.inputDigest) {
       await nameLateComers(db, campaign)
-      await refreshEstimates(db, campaign.id, rule)
+      await followRun(db, input, read)
       return answer(before, rule, true)
     }
     const computed = await judgeRun(db, input, read)
@@ -74,10 +75,16 @@ async function runCampaign(db: Kysely<DB>, campaign: Campaign, startedBy: number
       return writeRun(transaction, campaign, { rule, newest, computed, startedBy })
     })
     if (!written) continue
-    await refreshEstimates(db, campaign.id, rule)
+    await followRun(db, input, read)
     return answer(written, rule, false)
   }
   throw conflict('runs-overlap', 'Other consensus runs of this campaign kept coming in between. Try again in a moment.')
+}
+
+/** What follows from a run and need not be in one transaction with it: done again by the next where a process was killed. */
+async function followRun(db: Kysely<DB>, input: RunInput, read: ReadRun): Promise<void> {
+  await refreshEstimates(db, input.campaignId, input.rule)
+  if (input.newestLeftOutId > 0) await makeUpLooks(db, input.campaignId, input.rule, read.leftOut)
 }
 
 async function writeRun(
