@@ -2,7 +2,7 @@
 
 import type { ReactNode } from 'react'
 import { XAxis, YAxis, type Box } from './axes'
-import { fillOf, FillPatterns, type Fill } from './fills'
+import { fillOf, FillPatterns, isHatched, type Fill } from './fills'
 import type { PlotTable } from './plot-file'
 import { PlotFrame } from './plot-frame'
 import { PlotMark } from './plot-mark'
@@ -79,7 +79,7 @@ export function BarPlot({
                       width={barWidth}
                       height={low - high}
                       {...fillOf(parts[part].fill)}
-                      stroke={parts[part].fill === 'none' ? 'var(--edge)' : 'var(--page)'}
+                      stroke={isHatched(parts[part].fill) ? 'var(--edge)' : 'var(--page)'}
                       strokeWidth="0.75"
                     />
                   ) : null

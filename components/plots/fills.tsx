@@ -18,6 +18,11 @@ export function fillOf(fill: Fill): { fill: string } {
   return { fill: GRADES[fill] ?? `url(#plot-fill-${fill})` }
 }
 
+/** Hatched and empty parts want an edge of their own; plain ones a gap. */
+export function isHatched(fill: Fill): boolean {
+  return fill === 'none' || GRADES[fill] === undefined
+}
+
 const LINES: Partial<Record<Fill, { d: string; turn: number }>> = {
   rising: { d: 'M0 0V6', turn: 45 },
   falling: { d: 'M0 0V6', turn: -45 },

@@ -30,7 +30,7 @@ export const ALERT_RULES: readonly string[] = [
   `Alpha below ${ALERT.lowAlpha.toFixed(2)} over ${ALERT.leastCandidates} candidates or more.`,
   `Fewer than ${ALERT.leastStamps} calibration stamps of either kind.`,
   `Mean weighted kappa with the others at least ${ALERT.farBelowMedian} below the median of the others’, over ${ALERT.leastSharedGrades} shared grades or more.`,
-  `One letter in ${percent(ALERT.sameShare)} of ${ALERT.leastGradesSame} grades or more, and ${percent(ALERT.sameAboveOthers)} more often than the others gave it to the same candidates.`,
+  `One letter in ${percent(ALERT.sameShare)} of ${ALERT.leastGradesSame} grades or more, and at least ${Math.round(100 * ALERT.sameAboveOthers)} in a hundred more often than the others gave it to the same candidates.`,
   `${ALERT.quickOfStretch} of ${ALERT.stretch} looks in a row in less than ${ALERT.quickSeconds} s each.`,
   `Reliability in the first and the last third of the grades ${ALERT.driftStep} or more apart, with 95 % intervals that do not overlap.`,
   `Candidates held at an open bench, without a grade for ${ALERT.heldHours} hours.`,
