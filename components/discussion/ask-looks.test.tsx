@@ -12,6 +12,7 @@ const person = (personId: number, name: string, more: Partial<Askable> = {}): As
   grade: null,
   shown: false,
   asked: false,
+  leftOut: false,
   ...more,
 })
 const PEOPLE = [
@@ -20,6 +21,7 @@ const PEOPLE = [
   person(3, 'dunlin', { grade: 'N', shown: true }),
   person(4, 'plover', { asked: true }),
   person(5, 'ruff', { grade: 'U' }),
+  person(6, 'knot', { grade: 'A', leftOut: true }),
 ]
 const ask = (id: number, of: string, state: Ask['state']): Ask => ({
   id,
@@ -45,6 +47,7 @@ describe('asking for another look', () => {
     expect(box(/dunlin has seen the others’ grades/)).toBeDisabled()
     expect(box(/plover is asked already/)).toBeDisabled()
     expect(box(/ruff could not judge it/)).toBeEnabled()
+    expect(box(/knot is left out of the consensus: a look would not count/)).toBeEnabled()
   })
 
   it('sends whom and the note, and is empty then', async () => {

@@ -100,7 +100,8 @@ function barred({ asked, shown, role }: Askable): string | null {
   return shown && role !== 'lead' ? 'has seen the others’ grades' : null
 }
 
-function knownOf({ grade, role }: Askable): string {
+function knownOf({ grade, role, leftOut }: Askable): string {
+  if (leftOut) return 'is left out of the consensus: a look would not count'
   const given = grade === null ? 'has not graded it' : grade === 'U' ? 'could not judge it' : `gave ${grade}`
   return role === 'lead' ? `lead, sees the others’ grades; ${given}` : given
 }

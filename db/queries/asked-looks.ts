@@ -230,6 +230,8 @@ export interface AskableRow {
   /** The others' judgement of this candidate has been shown to them. */
   shown: 0 | 1
   asked: 0 | 1
+  /** Left out of the consensus now: a look of theirs would not count. */
+  leftOut: 0 | 1
 }
 
 /** Everybody in the campaign who may grade, as they stand to this candidate, by name. */
@@ -247,6 +249,8 @@ export async function listAskable(db: Kysely<DB>, campaignId: number, candidateI
         where shown.candidate_id = ${candidateId} and shown.person_id = person.id)`.as('shown'),
       sql<0 | 1>`exists (select 1 from asked_look ask where ask.candidate_id = ${candidateId}
         and ask.person_id = person.id and ask.grade_id is null and ask.withdrawn_at is null)`.as('asked'),
+      sql<0 | 1>`coalesce((select decided.left_out from left_out decided where decided.campaign_id = ${campaignId}
+        and decided.person_id = person.id order by decided.id desc limit 1), 0)`.as('leftOut'),
     ])
     .where('membership.campaign_id', '=', campaignId)
     .where('membership.ended_at', 'is', null)

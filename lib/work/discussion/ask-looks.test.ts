@@ -103,13 +103,24 @@ describe('asking for a look', () => {
 
   it('shows what speaks against asking: an earlier grade, an open ask, what they have been shown', async () => {
     await candidateEvidence(scenario.db, await scenario.permit(dunlin, 'read'), full)
+    await scenario.db
+      .insertInto('left_out')
+      .values({
+        campaign_id: scenario.campaign.id,
+        person_id: plover.id,
+        left_out: 1,
+        reason: 'Says B to all.',
+        decided_by: scenario.lead.id,
+        created_at: '2026-01-03',
+      })
+      .execute()
     await ask([curlew])
     expect(await askableAt(scenario.db, await lead(), full)).toMatchObject([
       { name: 'avocet', role: 'lead', grade: null, shown: false, asked: false },
       { name: 'curlew', grade: 'B', asked: true, shown: false },
       { name: 'dunlin', grade: 'N', asked: false, shown: true },
-      { name: 'plover', grade: null, shown: false },
-      { name: 'whimbrel' },
+      { name: 'plover', grade: null, shown: false, leftOut: true },
+      { name: 'whimbrel', leftOut: false },
     ])
   })
 })

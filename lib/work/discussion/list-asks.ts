@@ -33,6 +33,8 @@ export interface Askable {
   /** Has been shown the others' grades, so that another look would not be independent. Leads see them by role, and may be asked. */
   shown: boolean
   asked: boolean
+  /** Left out of the consensus: a look of theirs would not count. */
+  leftOut: boolean
 }
 
 const stateOf = (row: AskRow): Ask['state'] => (row.answeredAt ? 'answered' : row.withdrawnAt ? 'withdrawn' : 'open')
@@ -63,13 +65,14 @@ export async function askableAt(
   candidateId: number,
 ): Promise<Askable[]> {
   const rows = await listAskable(db, permit.campaign.id, candidateId)
-  return rows.map(({ personId, name, role, grade, shown, asked }) => ({
+  return rows.map(({ personId, name, role, grade, shown, asked, leftOut }) => ({
     personId,
     name,
     role,
     grade,
     shown: shown === 1,
     asked: asked === 1,
+    leftOut: leftOut === 1,
   }))
 }
 

@@ -169,7 +169,7 @@ describe('the order of splits', () => {
       'worth 0.99 bit',
       'worth 0.72 bit',
       'worth 0.47 bit',
-      'no grade to go by',
+      'no probability yet',
     ])
   })
 })

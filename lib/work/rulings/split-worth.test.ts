@@ -29,6 +29,7 @@ describe('what settling a split is worth', () => {
     expect(worthInWords(split({ mean: 1.5 }), RULE)).toBe('0.50 from a threshold')
     expect(worthInWords(split({ mean: 2.5 }), RULE)).toBe('split by spread alone')
     expect(worthInWords(split({}), RULE)).toBe('no grade to go by')
+    expect(worthInWords(split({}), null)).toBe('no probability yet')
   })
 
   it('is the order where the address names none that is known', () => {

@@ -35,10 +35,10 @@ export function worthOf(split: WorthOf, thresholds: MeanThresholds): number | nu
   return Math.min(split.mean - thresholds.setAsideMean, thresholds.confirmMean - split.mean)
 }
 
-/** 'worth 0.97 bit', '0.40 points from a threshold', 'mean beyond a threshold' */
+/** 'worth 0.97 bit', '0.40 from a threshold', 'split by spread alone' */
 export function worthInWords(split: WorthOf, thresholds: MeanThresholds): string {
   const worth = worthOf(split, thresholds)
-  if (worth === null) return 'no grade to go by'
+  if (worth === null) return thresholds ? 'no grade to go by' : 'no probability yet'
   if (!thresholds) return `worth ${probabilityBeside(worth)} bit`
   return worth < 0 ? 'split by spread alone' : `${worth.toFixed(2)} from a threshold`
 }
