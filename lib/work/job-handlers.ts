@@ -2,6 +2,7 @@ import 'server-only'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import type { JobHandlers } from '@/lib/platform/jobs/run-jobs'
 import { sendMailJob } from '@/lib/platform/mail/deliver-mail'
+import { paintStampsJob } from './calibration/paint-job'
 import { consensusJob } from './consensus/consensus-job'
 import { unpackArchivesJob } from './intake/archives/unpack-job'
 import { imageCandidatesJob, readFilesJob } from './stamps/imaging-jobs'
@@ -15,6 +16,7 @@ const longJobs: JobHandlers = {
   [JOB.readFiles]: readFilesJob,
   [JOB.unpackArchives]: unpackArchivesJob,
   [JOB.imageCandidates]: imageCandidatesJob,
+  [JOB.paintStamps]: paintStampsJob,
 }
 
 /** Every kind of job and who does it, a loop each entry: verdicts and letters never wait for a long intake. */

@@ -3,6 +3,7 @@ export const JOB = {
   readFiles: 'read-files',
   unpackArchives: 'unpack-archives',
   imageCandidates: 'image-candidates',
+  paintStamps: 'paint-stamps',
   consensus: 'consensus',
   sendMail: 'send-mail',
 } as const

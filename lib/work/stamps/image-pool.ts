@@ -3,6 +3,7 @@ import { availableParallelism } from 'node:os'
 import path from 'node:path'
 import { Piscina } from 'piscina'
 import { config } from '@/lib/platform/config/config'
+import type { PaintRunner } from './paint-task'
 import type { ImageRunner, PlanesRunner, PreviewRunner } from './worker-tasks'
 
 /** On globalThis because route handlers and instrumentation are bundled apart but share one process. */
@@ -23,12 +24,13 @@ function pool(): Piscina {
 }
 
 /** Work in threads of this process, so that reading and drawing never hold up a request. */
-export const imagePool: ImageRunner & PlanesRunner & PreviewRunner = {
+export const imagePool: ImageRunner & PlanesRunner & PreviewRunner & PaintRunner = {
   image: (task) => pool().run(task, { name: 'image' }),
   probe: (task) => pool().run(task, { name: 'probe' }),
   manifest: (task) => pool().run(task, { name: 'manifest' }),
   preview: (task) => pool().run(task, { name: 'preview' }),
   planes: (task) => pool().run(task, { name: 'planes' }),
+  paint: (task) => pool().run(task, { name: 'paint' }),
 }
 
 /** For scripts, which would otherwise wait for the threads to idle out. */

@@ -12,6 +12,8 @@ import { parseManifest } from '@/lib/work/intake/parse-manifest'
 import { codePlanes } from './code-planes'
 import { drawPreview } from './draw-stamps'
 import { imageCandidate } from './image-candidate'
+import { paintCandidate } from './paint-candidate'
+import type { PaintMade, PaintTask } from './paint-task'
 import { openFits } from './read-cutout'
 import type {
   CandidateOutcome,
@@ -39,6 +41,8 @@ export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
 export const planes = (task: PlanesTask): Promise<PlanesMade> => codePlanes(task)
 
 export const preview = (task: PreviewTask): Promise<PreviewMade> => drawPreview(task)
+
+export const paint = (task: PaintTask): Promise<PaintMade> => paintCandidate(task)
 
 export async function probe({ files, bands }: ProbeTask): Promise<FileProbe[]> {
   const probes: FileProbe[] = []
