@@ -1,16 +1,22 @@
 'use client'
 
 import { FolderUp, Upload } from 'lucide-react'
-import { useRef, useState, type DragEvent } from 'react'
+import { useEffect, useRef, useState, type DragEvent } from 'react'
 import { Button } from '@/components/ui/button'
 import { chosenFiles, droppedFiles, type Chosen } from './collect-files'
 
-/** A place to drop files and folders, and two buttons that open the same with a keyboard. */
-export function DropZone({ onChosen }: { onChosen: (chosen: Chosen) => void }) {
+/** A place to drop files and folders, and two buttons that open the same with a keyboard. `isBack`: after a look at matches. */
+export function DropZone({ onChosen, isBack = false }: { onChosen: (chosen: Chosen) => void; isBack?: boolean }) {
+  const section = useRef<HTMLElement>(null)
   const files = useRef<HTMLInputElement>(null)
   const folder = useRef<HTMLInputElement>(null)
   const [over, setOver] = useState(false)
   const [opening, setOpening] = useState(false)
+
+  // After the matches were looked at it stands in their place, and whoever goes by keyboard goes on here.
+  useEffect(() => {
+    if (isBack) section.current?.querySelector('button')?.focus()
+  }, [isBack])
 
   async function drop(event: DragEvent) {
     event.preventDefault()
@@ -31,6 +37,7 @@ export function DropZone({ onChosen }: { onChosen: (chosen: Chosen) => void }) {
 
   return (
     <section
+      ref={section}
       aria-label="Send files"
       onDragOver={(event) => {
         event.preventDefault()

@@ -52,6 +52,7 @@ export function IntakeScreen({
   const { queue, state } = useUploads(slug)
   const [left, setLeft] = useState<string[]>([])
   const [inHand, setInHand] = useState<ChosenFile[] | null>(null)
+  const [hasLooked, setHasLooked] = useState(false)
   const [atOnce, setAtOnce] = useSendAtOnce()
   const [filter, setFilter] = useState<FileFilter>(initialFilter)
   const [fault, setFault] = useState<string | null>(null)
@@ -68,7 +69,10 @@ export function IntakeScreen({
   async function choose(chosen: Chosen) {
     setLeft(chosen.left)
     if (chosen.files.length === 0) return
-    if (!atOnce) return setInHand(chosen.files)
+    if (!atOnce) {
+      setHasLooked(true)
+      return setInHand(chosen.files)
+    }
     // Not knowing what is here costs only time: the same bytes sent again change nothing.
     const here = await ask(chosen.files.map(({ name }) => name)).catch(() => null)
     queue.add(chosen.files.map((file, index) => ({ ...file, known: knownHash(here, index, file) })))
@@ -104,7 +108,7 @@ export function IntakeScreen({
         <div className="flex flex-col gap-5">
           {inHand ? null : (
             <div className="flex flex-col gap-3">
-              <DropZone onChosen={(chosen) => void choose(chosen)} />
+              <DropZone isBack={hasLooked} onChosen={(chosen) => void choose(chosen)} />
               <label className="flex items-center gap-2 text-small text-mute">
                 <input type="checkbox" checked={atOnce} onChange={(event) => setAtOnce(event.target.checked)} />
                 Send at once, without looking at the matches first

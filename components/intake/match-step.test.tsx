@@ -44,6 +44,11 @@ describe('the matching table before anything is sent', () => {
     expect(screen.queryByRole('row', { name: /^SWS1_g.fits/ })).toBeNull()
   })
 
+  it('has the focus when it opens, since the button that opened it is gone', async () => {
+    show([file('SWS1_g.fits')])
+    expect(await screen.findByText('1 file for 1 candidate, no problem seen')).toHaveFocus()
+  })
+
   it('shows the effect of another pattern at once, and saves it before the files are taken in', async () => {
     const { savePattern, onTake } = show([file('g-SWS1.fits'), file('r-SWS1.fits')])
     expect(await screen.findByText('2 files for 0 candidates, no problem seen')).toBeInTheDocument()

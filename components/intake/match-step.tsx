@@ -1,6 +1,6 @@
 'use client'
 
-import { useEffect, useMemo, useState } from 'react'
+import { useEffect, useMemo, useRef, useState } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { ToolButton } from '@/components/table/tool-button'
 import { Button } from '@/components/ui/button'
@@ -47,6 +47,9 @@ export function MatchStep({
   const [here, setHere] = useState<LookedUp | null>(null)
   const [fault, setFault] = useState<string | null>(null)
   const [taking, setTaking] = useState(false)
+  const heading = useRef<HTMLHeadingElement>(null)
+  // The button that opened this is gone, and with it the place of whoever goes by keyboard.
+  useEffect(() => heading.current?.focus(), [])
   useEffect(() => {
     let gone = false
     ask(files.map(({ name }) => name)).then(
@@ -109,7 +112,7 @@ export function MatchStep({
       className="flex flex-col gap-4 rounded-tray border border-line px-5 py-5"
     >
       <div className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1">
-        <h2 className="text-title font-semibold" aria-live="polite">
+        <h2 ref={heading} tabIndex={-1} className="text-title font-semibold outline-none" aria-live="polite">
           {done
             ? `${counted(files.length, 'file')} for ${counted(done.preview.candidates, 'candidate')}${problems > 0 ? `, ${counted(problems, 'problem')}` : ', no problem seen'}`
             : `Matching ${counted(files.length, 'file')}…`}

@@ -89,4 +89,12 @@ describe('the place to send files', () => {
     await userEvent.keyboard('{Enter}')
     expect(click).toHaveBeenCalledOnce()
   })
+
+  it('has the focus when it comes back after a look at matches, and does not take it when the page opens', () => {
+    const { unmount } = render(<DropZone onChosen={() => {}} />)
+    expect(document.body).toHaveFocus()
+    unmount()
+    render(<DropZone onChosen={() => {}} isBack />)
+    expect(screen.getByRole('button', { name: 'Choose files' })).toHaveFocus()
+  })
 })

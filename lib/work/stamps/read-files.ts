@@ -38,7 +38,6 @@ export async function readFiles(tools: ImagingTools, campaignId: number, progres
 class Reading {
   #afterId = 0
   #done = 0
-  #total = 0
   #reported = 0
   readonly #seen = new Map<number, number>()
   constructor(
@@ -54,7 +53,6 @@ class Reading {
   /** Returns whether there was anything to read. */
   async readAll(): Promise<boolean> {
     const { db, filesPerPage = FILES_PER_PAGE } = this.tools
-    this.#total = this.#done + (await countWaitingFiles(db, this.campaignId))
     await this.#tell(0)
     let found = await this.#readManifests()
     // Settings are read after manifests and once for this pass: a change asks for another.
@@ -154,8 +152,8 @@ class Reading {
 
   async tellAll(): Promise<void> {
     this.#reported = Date.now()
-    this.#total = Math.max(this.#total, this.#done)
-    await this.progress(this.#done, this.#total)
+    // Counted anew: files keep coming while others are read.
+    await this.progress(this.#done, this.#done + (await countWaitingFiles(this.tools.db, this.campaignId)))
   }
 
   /** A file that is never settled would be read for ever. */
