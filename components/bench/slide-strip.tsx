@@ -42,13 +42,13 @@ export function SlideStrip({
               <span className="grid size-full place-items-center text-[0.6875rem] text-tray-text">none</span>
             )}
           </span>
-          <span className="mt-1.5 flex items-baseline gap-1.5">
+          <span className="mt-1.5 block min-h-[2.3em] leading-[1.15] wrap-break-word">
             {index < 9 ? (
-              <span className="hidden md:inline">
+              <span className="mr-1.5 hidden md:inline">
                 <KeyCap>{String(index + 1)}</KeyCap>
               </span>
             ) : null}
-            <span className="truncate">{label}</span>
+            {label}
           </span>
         </button>
       ))}

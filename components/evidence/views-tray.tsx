@@ -83,7 +83,7 @@ export function ViewsTray({
                 aria-pressed={index === chosen}
                 aria-label={`Show ${slide.label}`}
                 onClick={() => onChoose(index)}
-                className={`block w-full rounded-key p-0.5 ring-1 ${
+                className={`relative block w-full rounded-key p-0.5 ring-1 ${
                   index === chosen ? 'bg-raise ring-lamp' : 'ring-transparent hover:ring-edge'
                 }`}
               >
@@ -96,12 +96,15 @@ export function ViewsTray({
                   overlay={false}
                   className="[&>p]:p-0 [&>p]:text-[0.625rem] [&>p]:leading-tight"
                 />
-                <span className="block truncate px-0.5 pt-0.5 text-left text-[0.6875rem] leading-4 text-tray-text">
-                  {keys && viewKeys && index < 9 ? (
-                    <kbd aria-hidden="true" className="figures mr-1 hidden font-semibold text-text lg:inline">
-                      {index + 1}
-                    </kbd>
-                  ) : null}
+                {keys && viewKeys && index < 9 ? (
+                  <kbd
+                    aria-hidden="true"
+                    className="figures absolute top-0.5 left-0.5 hidden rounded-br-key bg-tray/80 px-1 text-[0.6875rem] leading-4 font-semibold text-text lg:block"
+                  >
+                    {index + 1}
+                  </kbd>
+                ) : null}
+                <span className="block pt-0.5 text-left text-[0.6875rem] leading-[1.2] wrap-break-word text-tray-text">
                   {slide.label}
                 </span>
               </button>
@@ -118,5 +121,5 @@ export function ViewsTray({
  * what is left of the tray's width.
  */
 function slideWidth(views: number): string {
-  return `clamp(3rem, calc((100cqw - ${1.75 * views}rem) / ${views + 1}), 7rem)`
+  return `clamp(3.25rem, calc((100cqw - ${2 * views}rem) / ${views + 1}), 7rem)`
 }

@@ -45,7 +45,7 @@ export default function LightPanel({ light }: { light: LightStore }) {
   return (
     <div ref={root} className="grid gap-x-6 gap-y-1.5 @lg:grid-cols-2">
       <Status light={light} />
-      <div className="flex flex-col gap-1.5">
+      <div className="flex flex-col md:gap-1.5">
         <LightSlider light={light} label="Black" scale={BLACK_SCALE} read={readBlack} write={writeBlack} />
         <LightSlider light={light} label="White" scale={WHITE_SCALE} read={readWhite} write={writeWhite} />
         <LightSlider
@@ -76,18 +76,18 @@ export default function LightPanel({ light }: { light: LightStore }) {
           <ZoomButtons light={light} />
         </div>
         <div className="grid gap-x-3 @xs:grid-cols-2">
-          <label className="flex min-h-8 items-center gap-2 text-note text-mute md:min-h-6">
+          <label className="flex min-h-9 items-center gap-2 text-note text-mute md:min-h-6 pointer-coarse:min-h-9">
             <input
               type="checkbox"
               checked={keep}
               onChange={(event) => light.setKeep(event.target.checked)}
-              className="size-4 accent-text"
+              className="size-4 accent-text pointer-coarse:size-5"
             />
             Keep for the next ones
           </label>
           {bands === '' ? null : (
             <details className="group text-small @xs:open:col-span-2">
-              <summary className="flex min-h-8 list-none items-center text-note text-mute hover:text-text md:min-h-6">
+              <summary className="flex min-h-9 list-none items-center text-note text-mute hover:text-text md:min-h-6 pointer-coarse:min-h-9">
                 <span aria-hidden="true" className="mr-1.5 group-open:rotate-90">
                   ▸
                 </span>
@@ -162,7 +162,7 @@ function Toggle({
       aria-label={label}
       title={title}
       onClick={letGo(onPress)}
-      className={`min-h-9 touch-manipulation rounded-key border px-1 text-note md:min-h-7 ${
+      className={`min-h-11 touch-manipulation rounded-key border px-1 text-note md:min-h-7 pointer-coarse:min-h-11 ${
         on ? 'border-text bg-raise text-text' : 'border-line text-mute hover:border-edge hover:text-text'
       }`}
     >

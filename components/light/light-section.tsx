@@ -29,7 +29,7 @@ export function LightSection({
           type="button"
           aria-expanded={open}
           onClick={letGo(() => light.setOpen(!open))}
-          className="flex min-h-9 items-center gap-2 text-note font-semibold text-mute hover:text-text md:min-h-6"
+          className="-mx-2 flex min-h-11 items-center gap-2 px-2 text-note font-semibold text-mute hover:text-text md:min-h-6 pointer-coarse:min-h-11"
         >
           {keys ? (
             <span className="hidden md:inline">
@@ -43,7 +43,7 @@ export function LightSection({
           type="button"
           aria-pressed={close}
           onClick={letGo(() => light.setClose(!close))}
-          className="ml-auto flex min-h-9 items-center gap-2 text-note text-mute hover:text-text aria-pressed:text-text md:min-h-6"
+          className="-mr-2 ml-auto flex min-h-11 items-center gap-2 px-2 text-note text-mute hover:text-text aria-pressed:text-text md:min-h-6 pointer-coarse:min-h-11"
         >
           {keys ? (
             <span className="hidden md:inline">
@@ -56,7 +56,7 @@ export function LightSection({
           <button
             type="button"
             onClick={letGo(() => light.reset())}
-            className="flex min-h-9 items-center gap-2 text-note text-mute hover:text-text md:min-h-6"
+            className="-mr-2 flex min-h-11 items-center gap-2 px-2 text-note text-mute hover:text-text md:min-h-6 pointer-coarse:min-h-11"
           >
             {keys ? (
               <span className="hidden md:inline">

@@ -6,7 +6,8 @@ import { STEPS, type SliderScale } from './slider-scales'
 
 /** A thin line and a round handle, the same in every browser; the whole height takes the finger. */
 const SLIDER = [
-  'h-8 w-full touch-none cursor-pointer appearance-none rounded-key bg-transparent aria-disabled:opacity-40 md:h-6',
+  'h-10 w-full touch-none cursor-pointer appearance-none rounded-key bg-transparent aria-disabled:opacity-40 md:h-6',
+  'pointer-coarse:h-10',
   '[&::-webkit-slider-runnable-track]:h-0.5 [&::-webkit-slider-runnable-track]:bg-edge',
   '[&::-webkit-slider-thumb]:-mt-[9px] [&::-webkit-slider-thumb]:size-5 [&::-webkit-slider-thumb]:appearance-none',
   '[&::-webkit-slider-thumb]:rounded-full [&::-webkit-slider-thumb]:bg-text',

@@ -45,7 +45,7 @@ export function FigureField({
           setTyped(null)
           onChange(valueAt(Number(event.target.value), scale))
         }}
-        className="min-h-6 w-full accent-lamp"
+        className="min-h-6 w-full accent-lamp pointer-coarse:min-h-11"
       />
       <span className="flex items-center gap-1.5">
         <input
@@ -56,7 +56,7 @@ export function FigureField({
           onBlur={() => setTyped(null)}
           aria-invalid={error ? true : undefined}
           aria-describedby={notes}
-          className="figures min-h-8 w-full rounded-control border border-edge bg-well px-2 text-small aria-invalid:border-alarm"
+          className="figures min-h-8 w-full pointer-coarse:min-h-11 rounded-control border border-edge bg-well px-2 text-small aria-invalid:border-alarm"
         />
         <span className="w-4 text-note text-mute">{unit}</span>
       </span>

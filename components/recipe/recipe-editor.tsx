@@ -75,7 +75,7 @@ export function RecipeEditor({ slug, bands, versions, firstSamples, mostSamples 
 
   return (
     <div className="flex flex-col gap-8">
-      <div className="grid items-start gap-8 lg:grid-cols-[23rem_minmax(0,1fr)]">
+      <div className="flex flex-col gap-6 lg:grid lg:grid-cols-[23rem_minmax(0,1fr)] lg:items-start lg:gap-8">
         <div className="flex min-w-0 flex-col gap-6">
           <Part title="Views">
             <ViewList recipe={draft} bands={bands} chosen={view} onChoose={setView} onChange={edit} />
@@ -93,7 +93,7 @@ export function RecipeEditor({ slug, bands, versions, firstSamples, mostSamples 
             <FieldOfView recipe={draft} errors={errors} onChange={edit} />
           </Part>
         </div>
-        <div className="flex min-w-0 flex-col gap-4 lg:sticky lg:top-6">
+        <div className="contents min-w-0 flex-col gap-4 lg:sticky lg:top-6 lg:flex">
           {samples.length > 0 ? (
             <>
               <SampleChooser slug={slug} samples={samples} most={mostSamples} onChange={setSamples} />

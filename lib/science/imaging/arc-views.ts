@@ -8,6 +8,7 @@ import { extraLimits, type Recipe } from './recipe'
 import { renderColour } from './render-colour'
 import { renderDeep } from './render-deep'
 import { renderGrey } from './render-grey'
+import { saturationNote } from './view-notes'
 import type { RenderedView } from './rendered-view'
 
 const SATURATED = 'The core is saturated: no colour there, drawn as flat grey.'
@@ -54,5 +55,5 @@ export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedVie
   if (planes.length < 2) return null
   const { width, height } = planes[0]
   const pixels = renderColour(planes, recipe, extraLimits(recipe).core)
-  return { key: 'core', width, height, channels: 3, pixels, note: null }
+  return { key: 'core', width, height, channels: 3, pixels, note: saturationNote(planes) }
 }

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import { matchScales } from './match-scales'
 import type { BandPlane } from './normalise-planes'
 
@@ -57,5 +58,25 @@ describe('bands of different pixel scales', () => {
     const { planes, unmatched } = matchScales([seen('g', 80, 0.2), seen('r', 60, null)])
     expect(unmatched).toEqual(['r'])
     expect(planes[1].width).toBe(60)
+  })
+
+  // 2 by 2 pixels added up hold four times the light and, being independent, twice the noise; per pixel of the finer grid that
+  // is the light and the noise of the finer band.
+  it('count by the noise that independent pixels of their own would have, whatever the grid', () => {
+    const random = new SeededRandom(3)
+    const side = 80
+    const fine = Float32Array.from({ length: side * side }, () => 5 + 2 * random.normal())
+    const coarse = new Float32Array((side * side) / 4)
+    fine.forEach((value, i) => {
+      const [x, y] = [i % side, Math.floor(i / side)]
+      coarse[(y >> 1) * (side / 2) + (x >> 1)] += value
+    })
+    const { planes } = matchScales([
+      { band: 'g', width: side, height: side, data: fine, pixelScaleArcsec: 0.2 },
+      { band: 'r', width: side / 2, height: side / 2, data: coarse, pixelScaleArcsec: 0.4 },
+    ])
+    expect(planes[1].sky?.sigma).toBeGreaterThan(1.8)
+    expect(planes[1].sky?.sigma).toBeLessThan(2.2)
+    expect(planes[1].sky?.background).toBeCloseTo(5, 0)
   })
 })

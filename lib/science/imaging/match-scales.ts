@@ -1,4 +1,5 @@
 /** Brings bands of one candidate to one grid, by their pixel scales, so that they can be combined. */
+import { estimateNoise } from './noise'
 import type { BandPlane } from './normalise-planes'
 import { resample } from './resample'
 
@@ -54,7 +55,11 @@ function toGrid(plane: BandPlane, { width, height, pixelScaleArcsec }: BandPlane
     yx: 0,
     yy: ratio,
   })
-  return { ...plane, width, height, data, pixelScaleArcsec, sky: undefined }
+  // Neighbours on the finer grid share their noise: each differs little from the next, but no pixel knows more than a share of
+  // the light that one of the band's own knew. Measured there the noise would come out low and the band count for too much.
+  const { background, sigma, finiteFraction } = plane.sky ?? estimateNoise(plane.data, plane.width, plane.height)
+  const sky = { background: ratio * ratio * background, sigma: ratio * sigma, finiteFraction }
+  return { ...plane, width, height, data, pixelScaleArcsec, sky }
 }
 
 const scaleOf = (plane: BandPlane): number => plane.pixelScaleArcsec ?? Number.NaN

@@ -40,7 +40,7 @@ export function normalisePlane({ band, width, height, data, sky }: BandPlane): N
   if (data.length !== width * height) {
     throw new RangeError(`Band ${band} has ${data.length} pixels, not ${width} x ${height}.`)
   }
-  const { background, sigma, finiteFraction } = sky ?? estimateNoise(data, width, height)
+  const { background, sigma } = sky ?? estimateNoise(data, width, height)
   const values = new Float32Array(data.length)
   const perSigma = sigma > 0 ? 1 / sigma : 0
   let missing = 0
@@ -52,6 +52,6 @@ export function normalisePlane({ band, width, height, data, sky }: BandPlane): N
       missing++
     }
   }
-  const state = finiteFraction === 0 ? 'empty' : sigma > 0 ? 'usable' : 'constant'
+  const state = missing === data.length ? 'empty' : sigma > 0 ? 'usable' : 'constant'
   return { band, width, height, values, sigma, missing, state }
 }

@@ -11,7 +11,7 @@ import { renderColour } from './render-colour'
 import { renderDeep } from './render-deep'
 
 import { MISSING_GREY, renderGrey } from './render-grey'
-import { arcNote, bandNote, colourNote, deepNote, noColourNote, sizesNote } from './view-notes'
+import { arcNote, bandNote, colourNote, deepNote, noColourNote, saturationNote, sizesNote } from './view-notes'
 
 import type { RenderedView } from './rendered-view'
 
@@ -87,7 +87,8 @@ function colourView(
 ): RenderedView | null {
   const usable = group.filter((plane) => plane.state === 'usable')
   const { width, height } = usable[0]
-  const note = [sizesNote(left), colourNote(usable, group, absent)].filter(Boolean).join(' ') || null
+  const note =
+    [sizesNote(left), colourNote(usable, group, absent), saturationNote(usable)].filter(Boolean).join(' ') || null
   return { key: 'colour', width, height, channels: 3, pixels: renderColour(usable, recipe), note }
 }
 

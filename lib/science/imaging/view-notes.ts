@@ -1,4 +1,5 @@
 /** The sentences that go with a picture that is not made of everything it should be. */
+import { saturatedPixels } from './lens-light/core-faults'
 import type { NormalisedPlane } from './normalise-planes'
 
 /** Why there is no colour view; null when there can be one. */
@@ -46,6 +47,15 @@ export function arcNote(usable: NormalisedPlane[], group: NormalisedPlane[], abs
   return (
     [...(faults.length > 0 ? [`${from}: ${faults.join('; ')}.`] : []), ...missingPixelsNote(usable)].join(' ') || null
   )
+}
+
+/** For views of colour: bands whose middle is cut at one level, so that its hue says nothing; null when none is. */
+export function saturationNote(planes: NormalisedPlane[]): string | null {
+  const full = planes.filter(
+    (plane) => saturatedPixels(plane, (plane.width - 1) / 2, (plane.height - 1) / 2).length > 0,
+  )
+  if (full.length === 0) return null
+  return `The middle is saturated in ${full.map((plane) => plane.band).join(', ')}: its colour is not real.`
 }
 
 export function bandNote(plane: NormalisedPlane): string | null {

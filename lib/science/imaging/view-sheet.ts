@@ -95,9 +95,10 @@ export function viewSheet(source: ViewSource, recipe: Recipe): ViewSheet {
 
 function usableGroup(planes: DecodedPlane[]): NormalisedPlane[] {
   const native = planes.map(({ band, width, height, values, background, sigma, pixelScaleArcsec }) => {
-    // Only resampled planes are normalised anew, and to their own noise: the unit does not matter.
+    // Only resampled planes are normalised anew.
     const data = sigma > 0 ? values.map((value) => background + sigma * value) : values
-    return { band, width, height, data, pixelScaleArcsec }
+    const sky = { background, sigma, finiteFraction: 1 }
+    return { band, width, height, data, pixelScaleArcsec, sky }
   })
   return commonGrid(native, planes).group.filter((plane) => plane.state === 'usable')
 }

@@ -3,6 +3,7 @@ import { readFileSync } from 'node:fs'
 import { FitsError, type FitsFile, type FitsImage } from '@/lib/science/fits/fits-types'
 import { readFits } from '@/lib/science/fits/read-fits'
 import type { BandPlane } from '@/lib/science/imaging/normalise-planes'
+import { withoutFill } from '@/lib/science/imaging/without-fill'
 import { estimateNoise, type Noise } from '@/lib/science/imaging/noise'
 import { imageCentre } from '@/lib/science/sky/image-centre'
 import type { SkyPosition } from '@/lib/science/sky/separation'
@@ -52,7 +53,7 @@ export async function readCutouts(file: FileToRead, bands: readonly string[]): P
 
 function cutoutOf(fileId: number, { band, image, planeIndex }: BandPlace, fits: FitsFile): Cutout {
   const { width, height, hdu } = image
-  const data = image.planes[planeIndex]
+  const data = withoutFill(image.planes[planeIndex], width, height)
   const sky = estimateNoise(data, width, height)
   const { wcs, fault } = wcsOf(image, fits)
   const scale = wcs === null ? null : Math.sqrt(pixelScaleArcsec(wcs)[0] * pixelScaleArcsec(wcs)[1])

@@ -6,6 +6,8 @@ const SEARCH_RADIUS = 8
 const PLATEAU_PIXELS = 7
 const PLATEAU_LEVEL = 0.97
 const PLATEAU_SIGMA = 100
+/** As many pixels that are equal to the last bit are one at any brightness at which rounding cannot make them so. */
+const EQUAL_SIGMA = 30
 
 /** Pixels of a saturated core and one round it; empty when the core comes to a point. */
 export function saturatedPixels({ values, width, height }: NormalisedPlane, x: number, y: number): number[] {
@@ -18,10 +20,11 @@ export function saturatedPixels({ values, width, height }: NormalisedPlane, x: n
   for (let row = bottom; row <= top; row++) {
     for (let column = left; column <= right; column++) most = Math.max(most, values[row * width + column] || 0)
   }
-  if (most < PLATEAU_SIGMA) return []
+  if (most < EQUAL_SIGMA) return []
+  const level = most < PLATEAU_SIGMA ? most : PLATEAU_LEVEL * most
   for (let row = bottom; row <= top; row++) {
     for (let column = left; column <= right; column++) {
-      if (values[row * width + column] >= PLATEAU_LEVEL * most) near.push(row * width + column)
+      if (values[row * width + column] >= level) near.push(row * width + column)
     }
   }
   if (near.length < PLATEAU_PIXELS) return []
