@@ -26,17 +26,20 @@ export function BenchHeader({
         >
           <ArrowLeft size={18} aria-hidden="true" />
         </Link>
-        <span className="hidden truncate text-small font-semibold lg:inline">{campaignName}</span>
+        <span className="hidden truncate text-small font-semibold lg:inline short:hidden">{campaignName}</span>
         <span className="whitespace-nowrap text-note text-mute">
           <span className="figures">{counts.given.toLocaleString('en')}</span> of{' '}
           <span className="figures">{(counts.given + counts.left).toLocaleString('en')}</span>
-          <span className="hidden sm:inline"> graded by you</span>
+          <span className="hidden sm:inline short:hidden"> graded by you</span>
         </span>
       </div>
       {candidate ? (
         <div className="flex min-w-0 flex-wrap items-center gap-x-4">
           <h1 className="figures truncate text-small font-semibold">{candidate.name}</h1>
-          <Coordinates key={candidate.id} raDeg={candidate.raDeg} decDeg={candidate.decDeg} />
+          {/* On a phone the picture needs the room. */}
+          <span className="max-sm:hidden short:hidden">
+            <Coordinates key={candidate.id} raDeg={candidate.raDeg} decDeg={candidate.decDeg} />
+          </span>
         </div>
       ) : null}
     </header>

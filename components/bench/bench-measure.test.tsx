@@ -5,7 +5,7 @@ import { freshRoom, look, name, open } from './_bench-room'
 freshRoom()
 
 /** What stands below the picture. */
-const reading = () => document.querySelector('figcaption')?.textContent
+const reading = () => document.querySelector('figcaption [role="status"]')?.textContent
 const layer = () => document.querySelector<HTMLElement>('[data-tool]')
 
 describe('ruler and circle', () => {

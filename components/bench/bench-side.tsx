@@ -44,26 +44,26 @@ export function BenchSide({
               onToggle={bench.toggleTag}
             />
           </div>
-          <LightSection light={light} keys={keysOn} />
+          <div className="flex flex-wrap justify-between gap-x-4 md:contents short:flex">
+            <LightSection light={light} keys={keysOn} className={lightOpen ? 'max-md:basis-full' : 'max-md:grow'} />
+            <MeasureButtons tool={bench.tool} onTool={(tool) => run({ do: 'measure', tool })} />
+          </div>
         </>
       ) : null}
       <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />
       <div className="flex flex-wrap items-center justify-between gap-x-3 md:contents short:flex">
         {look ? (
-          <>
-            <MeasureButtons tool={bench.tool} onTool={(tool) => run({ do: 'measure', tool })} />
-            <RemarkBox
-              remark={bench.draft.remark}
-              open={bench.remarkOpen}
-              onOpen={() => run({ do: 'remark' })}
-              onClose={bench.closeRemark}
-              onWrite={bench.writeRemark}
-            />
-          </>
+          <RemarkBox
+            remark={bench.draft.remark}
+            open={bench.remarkOpen}
+            onOpen={() => run({ do: 'remark' })}
+            onClose={bench.closeRemark}
+            onWrite={bench.writeRemark}
+          />
         ) : null}
         <div className="flex grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 short:mt-0 short:grow short:flex-row short:items-center short:justify-between">
           <SaveLine snapshot={bench.snapshot} slug={slug} />
-          <div className="order-last flex gap-x-4 md:order-first short:order-last">
+          <div className="order-last flex gap-x-4 whitespace-nowrap md:order-first short:order-last">
             <button
               type="button"
               onClick={letGo(() => bench.setSheet('help'))}

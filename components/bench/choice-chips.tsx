@@ -22,7 +22,7 @@ export function ChoiceChips<T extends string>({
         aria-pressed={on}
         aria-keyshortcuts={open ? CHOICE_KEYS[index] : undefined}
         onClick={letGo(() => onPick(choice))}
-        className={`inline-flex min-h-11 touch-manipulation items-center gap-1.5 whitespace-nowrap rounded-full border px-3 text-small md:min-h-7 md:px-2.5 md:text-note ${
+        className={`inline-flex min-h-11 touch-manipulation items-center gap-1.5 whitespace-nowrap rounded-full border px-3 text-small md:min-h-7 short:min-h-11 md:px-2.5 md:text-note ${
           on ? 'border-lamp bg-lamp/12 text-text' : 'border-line text-mute hover:border-edge hover:text-text'
         }`}
       >

@@ -28,13 +28,15 @@ export function GradeLadder({
             aria-label={`${letter}: ${name}, ${means}`}
             aria-pressed={chosen === letter}
             onClick={letGo(() => onGrade(letter))}
-            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:text-left md:hover:bg-raise short:h-12 short:min-h-12 short:rounded-control short:border ${
+            className={`relative flex min-h-16 touch-manipulation flex-col items-center justify-center gap-0.5 overflow-hidden rounded-control border border-line active:bg-raise md:grid md:h-[clamp(3rem,7.4vh,3.9rem)] md:min-h-0 md:grid-cols-[2.75rem_1fr] md:justify-items-start md:rounded-none md:border-x-0 md:border-b-0 md:text-left md:hover:bg-raise short:h-12 short:min-h-12 short:grid-cols-[1.75rem_1fr] short:rounded-control short:border short:px-2 ${
               chosen === letter ? 'bg-raise outline outline-lamp md:outline-0' : 'bg-raise/60 md:bg-transparent'
             }`}
           >
             <span className={`text-[1.625rem] font-bold leading-none md:pl-0.5 ${ink}`}>{letter}</span>
             <span>
-              <span className="block text-[0.6875rem] leading-tight text-mute md:text-body md:text-text">{name}</span>
+              <span className="block text-[0.6875rem] leading-tight text-mute md:text-body md:text-text short:text-note">
+                {name}
+              </span>
               <span className="hidden text-note text-mute md:block short:hidden">{means}</span>
             </span>
             {otherKey(letter) ? (

@@ -43,13 +43,7 @@ export function MeasureLayer({
     }
   }
   const [first, second] = measuring.places.map(toScreen)
-  const length = Math.hypot(second.x - first.x, second.y - first.y)
-  const gap = length > 2 * RING ? RING / length : 0.5
-  const between = (share: number) =>
-    `${first.x + (second.x - first.x) * share} ${first.y + (second.y - first.y) * share}`
-  const ring = (at: Place, held: boolean) => (
-    <circle cx={at.x} cy={at.y} r={RING} strokeWidth={held ? 2.5 : 1.25} vectorEffect="non-scaling-stroke" />
-  )
+  const marks = { tool, first, second, held: measuring.held }
   return (
     <div
       ref={box}
@@ -62,37 +56,68 @@ export function MeasureLayer({
     >
       <svg
         viewBox="0 0 100 100"
-        className="pointer-events-none absolute inset-0 size-full text-lamp"
+        className="pointer-events-none absolute inset-0 size-full"
         fill="none"
-        stroke="currentColor"
         strokeWidth="1.25"
         aria-hidden="true"
-        style={{ filter: 'drop-shadow(0 0 1px rgb(0 0 0 / 0.9))' }}
       >
-        {tool === 'ruler' ? (
-          <>
-            <path d={`M${between(gap)}L${between(1 - gap)}`} strokeDasharray="4 5" vectorEffect="non-scaling-stroke" />
-            {ring(first, measuring.held === 0)}
-            {ring(second, measuring.held === 1)}
-          </>
-        ) : (
-          <>
-            <circle
-              cx={first.x}
-              cy={first.y}
-              r={second.x - first.x}
-              strokeWidth={measuring.held === 1 ? 2 : 1.25}
-              strokeDasharray="4 5"
-              vectorEffect="non-scaling-stroke"
-            />
-            <path
-              d={`M${first.x - 2.4} ${first.y}h1.6m1.6 0h1.6M${first.x} ${first.y - 2.4}v1.6m0 1.6v1.6`}
-              strokeWidth={measuring.held === 0 ? 2.5 : 1.25}
-              vectorEffect="non-scaling-stroke"
-            />
-          </>
-        )}
+        {/* A dark line under the light one: seen on sky and on the core of a galaxy alike. */}
+        <g className="text-black" stroke="currentColor" opacity="0.7">
+          <Marks {...marks} wider={2} />
+        </g>
+        <g className="text-white" stroke="currentColor">
+          <Marks {...marks} wider={0} />
+        </g>
       </svg>
     </div>
+  )
+}
+
+/** Thin lines and open rings; what is held is drawn stronger. */
+function Marks({
+  tool,
+  first,
+  second,
+  held,
+  wider,
+}: {
+  tool: Tool
+  first: Place
+  second: Place
+  held: 0 | 1
+  wider: number
+}) {
+  const strong = (end: 0 | 1) => (held === end ? 2.5 : 1.25) + wider
+  const line = { vectorEffect: 'non-scaling-stroke', strokeDasharray: '4 5' }
+  if (tool === 'circle') {
+    return (
+      <>
+        <circle cx={first.x} cy={first.y} r={second.x - first.x} {...line} strokeWidth={strong(1)} />
+        <path
+          d={`M${first.x - 2.4} ${first.y}h1.6m1.6 0h1.6M${first.x} ${first.y - 2.4}v1.6m0 1.6v1.6`}
+          strokeWidth={strong(0)}
+          vectorEffect="non-scaling-stroke"
+        />
+      </>
+    )
+  }
+  const length = Math.hypot(second.x - first.x, second.y - first.y)
+  const gap = length > 2 * RING ? RING / length : 0.5
+  const between = (share: number) =>
+    `${first.x + (second.x - first.x) * share} ${first.y + (second.y - first.y) * share}`
+  return (
+    <>
+      <path d={`M${between(gap)}L${between(1 - gap)}`} {...line} strokeWidth={1.25 + wider} />
+      {([first, second] as const).map((at, end) => (
+        <circle
+          key={end}
+          cx={at.x}
+          cy={at.y}
+          r={RING}
+          strokeWidth={strong(end as 0 | 1)}
+          vectorEffect="non-scaling-stroke"
+        />
+      ))}
+    </>
   )
 }

@@ -116,10 +116,13 @@ export function Stage({
         </div>
       </div>
       {/* Room for two lines always, so that the picture keeps its size whatever there is to know of it. */}
-      <figcaption className="flex h-9 shrink-0 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
+      <figcaption className="flex h-9 shrink-0 short:h-6 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
         {reading ? (
-          <span role="status" className="figures line-clamp-2 text-text">
-            {reading}
+          <span className="line-clamp-2">
+            <span role="status" className="figures text-text">
+              {reading}
+            </span>
+            <span className="max-md:hidden short:hidden"> · arrows move it, Enter takes the other end, Esc leaves</span>
           </span>
         ) : (
           <span className="line-clamp-2" title={view?.note ?? undefined}>
