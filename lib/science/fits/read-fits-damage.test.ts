@@ -57,7 +57,7 @@ function tableStart(file: Uint8Array): number {
   }
   return 0
 }
-const tables = new Map(compressed.map((file) => [file, tableStart(file)]))
+const tables = new Map<Uint8Array, number>(compressed.map((file) => [file, tableStart(file)]))
 
 const VALUES = [
   'T',
