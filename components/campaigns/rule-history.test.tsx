@@ -25,23 +25,13 @@ const RELIABILITY = {
 }
 const cells = (row: number) => [...screen.getAllByRole('row')[row].children].map((cell) => cell.textContent)
 
-it('shows versions of both methods, with a dash for what a method does not have', () => {
+it('shows versions of both methods, each with what decides by it, and what a version changed', () => {
   render(<RuleHistory versions={[RELIABILITY, MEAN]} />)
-  expect(cells(1).slice(1, 9)).toEqual([
+  expect(cells(1).slice(1, 5)).toEqual([
     'reliability (changed)',
     '10 (changed)',
     '2',
-    '–',
-    '–',
-    '–',
-    '0.001 (changed)',
-    '0.05 (changed)',
+    'false confirmed 0.001 (changed)missed lenses 0.05 (changed)',
   ])
-  expect(cells(2).slice(1, 9)).toEqual(['mean', '6', '2', '2', '1', '0.9', '–', '–'])
-})
-
-it('leaves out the columns of a method that no version has', () => {
-  render(<RuleHistory versions={[MEAN]} />)
-  expect(screen.queryByText('missed lenses')).toBeNull()
-  expect(screen.getByText('spread >')).toBeVisible()
+  expect(cells(2).slice(1, 5)).toEqual(['mean', '6', '2', 'confirm ≥ 2set aside ≤ 1spread > 0.9'])
 })

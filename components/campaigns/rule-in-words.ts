@@ -16,9 +16,9 @@ export function ruleInWords(rule: RuleInput): string {
     const most = rule.gradesWanted === 1 ? 'one person looks' : `${rule.gradesWanted} people look`
     return (
       `At most ${most} at each candidate. From ${grades} on it is decided as soon as its grades weigh enough: confirmed when they ` +
-      `multiply the odds of a lens by ${factor(upper)}, set aside when they divide them by ${factor(-lower)}. So that ` +
-      `about ${percentOf(rule.falseConfirmed)} of what is no lens is confirmed, and ${percentOf(rule.missedLens)} of lenses ` +
-      `${rule.missedLens === 0.01 ? 'is' : 'are'} set aside. What no look could decide is a split.`
+      `multiply the odds of a lens by ${factor(upper)}, set aside when they divide them by ${factor(-lower)}. That ` +
+      `confirms about ${percentOf(rule.falseConfirmed)} of what is no lens and sets aside about ${percentOf(rule.missedLens)} of ` +
+      'the lenses. What all its looks leave undecided is a split.'
     )
   }
   const people = rule.gradesWanted === 1 ? 'One person looks' : `${rule.gradesWanted} people look`
