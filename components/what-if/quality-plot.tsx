@@ -1,6 +1,7 @@
 'use client'
 
 import { useId } from 'react'
+import type { RuleQuality } from '@/lib/science/agreement/rule-quality'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import type { CurvePoint, QualityCurve } from '@/lib/work/consensus/quality-curve'
 import type { RuleTrial } from '@/lib/work/consensus/try-rule'
@@ -16,6 +17,14 @@ const RIGHT = 16
 interface Place {
   completeness: number | null
   purity: number | null
+}
+
+/** What the stamps say of both, with intervals; null unless they say something of each. */
+function crossOf(quality: RuleQuality | null) {
+  if (!quality) return null
+  const { completeness, purity } = quality
+  if (completeness.value === null || purity.value === null || !completeness.interval || !purity.interval) return null
+  return { completeness: completeness.value, purity: purity.value, across: completeness.interval, up: purity.interval }
 }
 
 /** Where an axis begins: a tenth below all that is marked, and with some room. */
@@ -57,6 +66,7 @@ export function QualityPlot({
   if (promised.length < 2 || !trial.promised || !inForce.promised) return null
   const [before, after]: Place[] = [inForce.promised, trial.promised]
   const measured = trial.stamps.quality
+  const cross = crossOf(measured)
   const from = {
     x: axisFrom([before.completeness, after.completeness, measured?.completeness.value]),
     y: axisFrom([before.purity, after.purity, measured?.purity.value]),
@@ -129,23 +139,10 @@ export function QualityPlot({
           {stamps.length > 1 ? (
             <path d={line(stamps)} className="stroke-mute" strokeWidth="1.5" strokeDasharray="5 4" />
           ) : null}
-          {measured?.completeness.interval &&
-          measured.purity.interval &&
-          measured.completeness.value !== null &&
-          measured.purity.value !== null ? (
+          {cross ? (
             <g className="stroke-lamp" strokeWidth="1.25" opacity="0.8">
-              <line
-                x1={x(measured.completeness.interval.low)}
-                x2={x(measured.completeness.interval.high)}
-                y1={y(measured.purity.value)}
-                y2={y(measured.purity.value)}
-              />
-              <line
-                x1={x(measured.completeness.value)}
-                x2={x(measured.completeness.value)}
-                y1={y(measured.purity.interval.low)}
-                y2={y(measured.purity.interval.high)}
-              />
+              <line x1={x(cross.across.low)} x2={x(cross.across.high)} y1={y(cross.purity)} y2={y(cross.purity)} />
+              <line x1={x(cross.completeness)} x2={x(cross.completeness)} y1={y(cross.up.low)} y2={y(cross.up.high)} />
             </g>
           ) : null}
           {before.completeness !== null && before.purity !== null ? (
@@ -168,7 +165,7 @@ export function QualityPlot({
       </svg>
       <p className="text-note text-mute">
         Ring: the rule in force. Amber dot: the tried rule
-        {measured ? '; amber cross: its stamps, with 95 % intervals' : ''}. Line: by lens probabilities
+        {cross ? '; amber cross: its stamps, with 95 % intervals' : ''}. Line: by lens probabilities
         {stamps.length > 1 ? '; dashed: by calibration stamps' : ''}.
       </p>
       <CurveTable marks={marks} before={before} after={after} />

@@ -45,9 +45,11 @@ export function StateCounts({ trial }: { trial: RuleTrial }) {
                 >
                   {signed(change)}
                 </span>
-                <span className="whitespace-nowrap text-note text-mute max-md:hidden">
-                  now {trial.now[state].toLocaleString('en')}
-                </span>
+                {change === 0 ? null : (
+                  <span className="whitespace-nowrap text-note text-mute max-md:hidden">
+                    now {trial.now[state].toLocaleString('en')}
+                  </span>
+                )}
               </dd>
             </div>
           )

@@ -40,16 +40,21 @@ export interface TimedSpan {
   longestBlockMs: number
 }
 
+/** Milliseconds of each call, sorted: until it had answered, and of the processor, which other programs do not lengthen. */
+export interface Calls {
+  wall: number[]
+  processor: number[]
+}
+
 export interface ConsensusRun {
   candidates: number
   grades: number
   first: TimedSpan
   again: TimedSpan
-  /** milliseconds of each call, sorted */
-  gradeMs: number[]
-  lendMs: number[]
+  grade: Calls
+  lend: Calls
   readWhatIf: TimedSpan & { megabytes: number }
-  moveMs: number[]
+  move: Calls
   peakMegabytes: number
 }
 
@@ -65,14 +70,18 @@ async function timed<T>(work: () => Promise<T>): Promise<TimedSpan & { result: T
   return { seconds, longestBlockMs: delay.max / 1e6, result }
 }
 
-async function eachMs<T>(items: readonly T[], work: (item: T) => unknown): Promise<number[]> {
-  const times: number[] = []
+async function timeEach<T>(items: readonly T[], work: (item: T) => unknown): Promise<Calls> {
+  const calls: Calls = { wall: [], processor: [] }
   for (const item of items) {
+    const before = process.cpuUsage()
     const started = performance.now()
     await work(item)
-    times.push(performance.now() - started)
+    calls.wall.push(performance.now() - started)
+    const { user, system } = process.cpuUsage(before)
+    calls.processor.push((user + system) / 1000)
   }
-  return times.sort((a, b) => a - b)
+  for (const times of Object.values(calls)) times.sort((a, b) => a - b)
+  return calls
 }
 
 interface Site {
@@ -132,12 +141,12 @@ async function measure(db: Kysely<DB>, candidates: number): Promise<ConsensusRun
   await fill(db, site, candidates)
   const first = await timed(() => runConsensus(db, site.lead))
   const lent: { grader: number; id: number }[] = []
-  const lendMs = await eachMs(site.graders, async (permit) => {
+  const lend = await timeEach(site.graders, async (permit) => {
     const { candidates: next } = await lendNext(db, permit, 10)
     lent.push(...next.map(({ id }) => ({ grader: site.graders.indexOf(permit), id })))
   })
   const answers = ['A', 'B', 'C', 'N'].map((grade) => GradeInput.parse({ grade }))
-  const gradeMs = await eachMs(lent, ({ grader, id }) => recordGrade(db, site.graders[grader], id, answers[id % 4]))
+  const grade = await timeEach(lent, ({ grader, id }) => recordGrade(db, site.graders[grader], id, answers[id % 4]))
   const again = await timed(() => runConsensus(db, site.lead))
   const read = await timed(() => readWhatIf(db, site.lead))
   const megabytes = (await promisify(gzip)(encodeWhatIf(read.result), { level: 1 })).length / 2 ** 20
@@ -147,7 +156,7 @@ async function measure(db: Kysely<DB>, candidates: number): Promise<ConsensusRun
       ? RuleInput.parse({ method: 'reliability', falseConfirmed: 0.0005 * (at + 1) })
       : RuleInput.parse({ method: 'mean', confirmMean: 1.5 + 0.02 * at }),
   )
-  const moveMs = await eachMs(rules, (rule) => [
+  const move = await timeEach(rules, (rule) => [
     tryRule(columns, rule),
     qualityCurve(columns, rule),
     scoreBins(columns, rule),
@@ -158,10 +167,10 @@ async function measure(db: Kysely<DB>, candidates: number): Promise<ConsensusRun
     grades: candidates * GRADES_A_CANDIDATE,
     first: span(first),
     again: span(again),
-    gradeMs,
-    lendMs,
+    grade,
+    lend,
     readWhatIf: { ...span(read), megabytes },
-    moveMs,
+    move,
     peakMegabytes: process.resourceUsage().maxRSS / 1024,
   }
 }

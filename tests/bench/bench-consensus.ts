@@ -5,7 +5,7 @@
 import { execFile } from 'node:child_process'
 import { fileURLToPath } from 'node:url'
 import { promisify } from 'node:util'
-import type { ConsensusRun, TimedSpan } from './_consensus-run'
+import type { Calls, ConsensusRun, TimedSpan } from './_consensus-run'
 import { againstAim } from './_aim'
 import { benchReliability } from './bench-reliability'
 
@@ -25,13 +25,13 @@ async function throughDatabase(): Promise<string[]> {
   const run = JSON.parse(stdout) as ConsensusRun
   const size = `${run.candidates.toLocaleString('en')} candidates, ${run.grades.toLocaleString('en')} grades`
   return [
-    `consensus, a whole run through the database, ${size}: ${span(run.first)}; again after ${run.gradeMs.length} grades: ${span(run.again)}`,
+    `consensus, a whole run through the database, ${size}: ${span(run.first)}; again after ${run.grade.wall.length} grades: ${span(run.again)}`,
     `consensus, peak memory of that process, ${run.peakMegabytes.toFixed(0)} MB`,
-    `consensus, one grade recorded with its estimate: ${spread(run.gradeMs)}; ${againstAim(median(run.gradeMs), 5, 'ms')}`,
-    `consensus, the next ten candidates lent: ${spread(run.lendMs)}`,
+    `consensus, one grade recorded with its estimate: ${spread(run.grade)}; ${againstAim(median(run.grade.wall), 5, 'ms')}`,
+    `consensus, the next ten candidates lent: ${spread(run.lend)}`,
     `consensus, what if: numbers of all candidates read in ${span(run.readWhatIf)}, ${run.readWhatIf.megabytes.toFixed(2)} MB sent`,
-    `consensus, what if: a threshold moved, with changes, quality, curve and histogram: ${spread(run.moveMs)}; ` +
-      againstAim(run.moveMs[run.moveMs.length - 1], 100, 'ms'),
+    `consensus, what if: a threshold moved, with changes, quality, curve and histogram: ${spread(run.move)}; ` +
+      againstAim(median(run.move.wall), 100, 'ms'),
   ]
 }
 
@@ -41,5 +41,6 @@ const span = ({ seconds, longestBlockMs }: TimedSpan) =>
 /** Of sorted times. */
 const median = (times: readonly number[]) => times[Math.floor(times.length / 2)]
 
-const spread = (times: readonly number[]) =>
-  `median ${median(times).toFixed(1)} ms, longest ${times[times.length - 1].toFixed(1)} ms of ${times.length}`
+const spread = ({ wall, processor }: Calls) =>
+  `median ${median(wall).toFixed(1)} ms (${median(processor).toFixed(1)} ms of the processor), longest ` +
+  `${wall[wall.length - 1].toFixed(1)} ms of ${wall.length}`

@@ -4,7 +4,7 @@
  *
  * Both designs are set with the truth at hand: the cut is the best there is, and the two error rates of the product's rule are
  * those whose boundaries reach that catalogue, found on the simulation without a database (compare-looks.ts) and moved after each
- * pass through the product by what was lacking or to spare. Reliabilities and share of lenses are learned, never given.
+ * pass through the product by what was lacking. Reliabilities and share of lenses are learned, never given.
  */
 import { compareLooks, isAsGood, moveGoal, waldNumber } from '@/lib/science/agreement/compare-looks'
 import { boundariesReaching, lookSteps } from '@/lib/science/agreement/sample-number'
@@ -49,6 +49,11 @@ export function ratesOfBoundaries({ upper, lower }: Boundaries): ErrorRates {
   return { falseConfirmed: (1 - b) / (a - b), missedLens: (b * (a - 1)) / (a - b) }
 }
 
+/** A goal that was reached stays: the first catalogue that matches is taken. */
+function raised(goal: number, wanted: number, reached: number): number {
+  return reached < wanted ? moveGoal(goal, wanted, reached) : goal
+}
+
 export async function compareDesigns(scenario: SearchScenario, options: CompareOptions): Promise<DesignComparison> {
   const search = simulateSearch(scenario)
   const fixed = bestFixedLooks(search, FIXED_LOOKS)
@@ -76,8 +81,8 @@ export async function compareDesigns(scenario: SearchScenario, options: CompareO
     best = { product, rule, isMatched }
     if (isMatched) break
     goal = {
-      completeness: moveGoal(goal.completeness, wanted.completeness, product.completeness),
-      purity: moveGoal(goal.purity, wanted.purity, product.purity ?? 0),
+      completeness: raised(goal.completeness, wanted.completeness, product.completeness),
+      purity: raised(goal.purity, wanted.purity, product.purity ?? 0),
     }
   }
   if (!best) throw new RangeError('There must be one pass or more.')
