@@ -80,7 +80,7 @@ async function timeEach<T>(items: readonly T[], work: (item: T) => unknown): Pro
     const { user, system } = process.cpuUsage(before)
     calls.processor.push((user + system) / 1000)
   }
-  for (const times of Object.values(calls)) times.sort((a, b) => a - b)
+  for (const times of [calls.wall, calls.processor]) times.sort((a, b) => a - b)
   return calls
 }
 
