@@ -53,6 +53,8 @@ export interface CandidateToGrade {
   imaged_at: string | null
   grades_given: number
   looks_asked: number
+  /** Everybody may grade a calibration stamp: no number of looks is wanted of it. */
+  is_calibration: 0 | 1
 }
 
 export async function findCandidateToGrade(
@@ -63,6 +65,7 @@ export async function findCandidateToGrade(
   const row = await db
     .selectFrom('candidate')
     .select(['id', 'imaged_at', 'grades_given', 'looks_asked'])
+    .select(sql<0 | 1>`truth is not null`.as('is_calibration'))
     .where('id', '=', candidateId)
     .where('campaign_id', '=', campaignId)
     .executeTakeFirst()

@@ -39,9 +39,12 @@ const WANTED: Record<Wanted, (asker: WantedLooks) => RawBuilder<SqlBool>> = {
       : sql<SqlBool>`+candidate.grades_given < max(${gradesWanted}, candidate.looks_asked)`,
 }
 
+/** Everybody may see a calibration stamp, whatever the wanted number; those are mixed in, not lent for being wanted. */
+const isStamp = sql<SqlBool>`+candidate.truth is not null`
+
 /**
  * Candidates that this person may still be shown: imaged, short of the wanted number, not decided by a ruling that stands,
- * never graded by them.
+ * never graded by them. Calibration stamps are among 'either' only, which is what they may hold already.
  */
 function openTo(db: Kysely<DB>, asker: Asker, wanted: Wanted) {
   const { campaignId, personId } = asker
@@ -49,7 +52,8 @@ function openTo(db: Kysely<DB>, asker: Asker, wanted: Wanted) {
     .selectFrom('candidate')
     .where('candidate.campaign_id', '=', campaignId)
     .where('candidate.imaged_at', 'is not', null)
-    .where(WANTED[wanted](asker))
+    .where((e) => (wanted === 'either' ? e.or([WANTED.either(asker), isStamp]) : WANTED[wanted](asker)))
+    .$if(wanted !== 'either', (query) => query.where(sql<SqlBool>`+candidate.truth is null`))
     .where((e) =>
       e.or([
         e('candidate.ruling_id', 'is', null),
@@ -86,7 +90,7 @@ function othersLeases({ personId, now }: Asker) {
 
 /** Room for one more person beside the grades that stand and the live leases of others. */
 function hasRoom(asker: Asker) {
-  return sql<boolean>`candidate.grades_given + ${othersLeases(asker)} < max(${asker.gradesWanted}, candidate.looks_asked)`
+  return sql<SqlBool>`candidate.grades_given + ${othersLeases(asker)} < max(${asker.gradesWanted}, candidate.looks_asked)`
 }
 
 export interface QueuedCandidate {
@@ -107,7 +111,7 @@ export async function listLentCandidates(db: Kysely<DB>, asker: Asker, limit: nu
     .where('lease.campaign_id', '=', asker.campaignId)
     .where('lease.person_id', '=', asker.personId)
     .where('lease.until', '>', asker.now)
-    .where(hasRoom(asker))
+    .where((e) => e.or([hasRoom(asker), isStamp]))
     .orderBy('lease.id')
     .limit(limit)
     .execute()

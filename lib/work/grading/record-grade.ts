@@ -75,7 +75,7 @@ export async function recordGrade(
     if (corrected && saysTheSame(corrected, input)) return { row: corrected, replaced: null }
     if (corrected) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
-    if (!corrected && !ask) await assertRoom(transaction, candidate, viewer.id, rule)
+    if (!corrected && !ask && !candidate.is_calibration) await assertRoom(transaction, candidate, viewer.id, rule)
     const row = await insertGrade(transaction, {
       uid: input.id ?? randomUUID(),
       campaign_id: campaign.id,

@@ -82,12 +82,13 @@ describe('the queue under the reliability method', () => {
     await expect(give(5, 0, 'A')).rejects.toMatchObject({ type: 'candidate-full' })
   })
 
-  it('serves calibration stamps up to the most looks, however sure, among what nobody has seen', async () => {
+  it('leaves calibration stamps to be mixed in, whatever the model makes of them', async () => {
     await scenario.db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', ids[2]).execute()
+    await scenario.db.updateTable('campaign').set({ calibration_share: 0 }).execute()
     await run()
     for (const grader of [0, 1, 2]) await give(grader, 2, 'A')
     await run()
-    expect(await offered(5)).toEqual([0, 1, 2, 3, 4])
+    expect(await offered(5)).toEqual([0, 1, 3, 4])
     await give(3, 2, 'A')
     expect(await offered(5)).toEqual([0, 1, 3, 4])
   })

@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { countLooks, findMix, listUnseenStamps } from '@/db/queries/mixing'
 import {
   countOthersLeases,
   deleteExpiredLeases,
@@ -23,7 +24,9 @@ import { askerOf } from '@/lib/work/campaigns/asker'
 import { chooseLooks } from './choose-looks'
 import { LEASE_MS, MOST_LENT } from './lease-time'
 import { ratesIn } from './lens-estimate'
+import { kindOf, mix } from './mix'
 import { newestModel } from './model-of-run'
+import { personStream } from './person-stream'
 
 export interface LentCandidates {
   candidates: (QueuedCandidate | AskedCandidate)[]
@@ -56,14 +59,33 @@ export async function lendCandidates(
       await setLeasesUntil(transaction, viewer.id, ids, until)
     }
     const more = room - held.length
-    const next =
-      more > 0 ? besides(asked, await listNext(transaction, asker, rule, more + asked.length)).slice(0, more) : []
+    const next = more > 0 ? await listMixed(transaction, asker, rule, { asked, held: held.length, more }) : []
     if (next.length > 0) {
       const candidateIds = next.map(({ id }) => id)
       await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
     }
     return { candidates: [...asked, ...held, ...next], until }
   })
+}
+
+/** What is lent anew: what is wanted next, with calibration stamps among it at the places that are drawn for them. */
+async function listMixed(
+  transaction: Kysely<DB>,
+  asker: Asker,
+  rule: RuleInForce,
+  { asked, held, more }: { asked: readonly AskedCandidate[]; held: number; more: number },
+): Promise<QueuedCandidate[]> {
+  const wanted = await listNext(transaction, asker, rule, more + asked.length)
+  const ordinary = besides(asked, wanted).slice(0, more)
+  const { calibrationShare, stamps } = await findMix(transaction, asker.campaignId)
+  if (stamps === 0 || calibrationShare === 0 || ordinary.length === 0) return ordinary
+  const stream = await personStream(transaction, asker.campaignId, asker.personId)
+  const drawAt = (place: number) => stream.at(place)
+  const place = (await countLooks(transaction, asker.campaignId, asker.personId)) + held
+  const shares = { calibration: calibrationShare, repeat: 0 }
+  const wantsStamp = ordinary.some((_, k) => kindOf(drawAt(place + k), shares) === 'stamp')
+  const unseen = wantsStamp ? besides(asked, await listUnseenStamps(transaction, asker)) : []
+  return mix({ ordinary, stamps: unseen, repeats: [] }, drawAt, place, more, shares).map(({ item }) => item)
 }
 
 /** Those that a lead has reopened come before what the rule wants. */

@@ -42,8 +42,9 @@ describe('the queue', () => {
   it('tells a grader what to look at and nothing of what anybody made of it', async () => {
     await scenario.db.updateTable('candidate').set({ truth: 'lens', score: 0.97 }).where('id', '=', ids[0]).execute()
     await scenario.db.updateTable('candidate').set({ state: 'split' }).where('id', '=', ids[1]).execute()
+    await scenario.db.updateTable('campaign').set({ calibration_share: 0 }).execute()
     const answer = await ask(0, 2)
-    expect(answer).toMatchObject({ given: 0, left: 4, imaged: true, until: '2026-03-01T20:20:00.000Z' })
+    expect(answer).toMatchObject({ given: 0, left: 3, imaged: true, until: '2026-03-01T20:20:00.000Z' })
     expect(Object.keys(answer.candidates[0]).sort()).toEqual([
       'closeFieldArcsec',
       'decDeg',

@@ -1,0 +1,76 @@
+/**
+ * What stands at the places of a person's queue: ordinary candidates, and mixed in among them calibration stamps and own candidates
+ * that come back. Each place is drawn for itself, so gaps are geometric and nothing can be foretold from what came before. Pure.
+ */
+import type { PlaceDraw } from './person-stream'
+
+export interface Shares {
+  calibration: number
+  repeat: number
+}
+
+export type PlaceKind = 'stamp' | 'repeat' | 'ordinary'
+
+export function kindOf({ kind }: PlaceDraw, { calibration, repeat }: Shares): PlaceKind {
+  if (kind < calibration) return 'stamp'
+  return kind < calibration + repeat ? 'repeat' : 'ordinary'
+}
+
+export interface Supplies<T> {
+  ordinary: readonly T[]
+  /** In an order that does not change from one asking to the next. */
+  stamps: readonly T[]
+  repeats: readonly T[]
+}
+
+export interface Mixed<T> {
+  kind: PlaceKind
+  item: T
+}
+
+/**
+ * The next `count` of a queue from `place` on. Where what was drawn has run out, an ordinary one comes; where ordinary ones have run
+ * out the queue ends: nobody is kept for calibration alone.
+ */
+export function mix<T>(
+  supplies: Supplies<T>,
+  drawAt: (place: number) => PlaceDraw,
+  place: number,
+  count: number,
+  shares: Shares,
+): Mixed<T>[] {
+  const ordinary = [...supplies.ordinary]
+  const rest = { stamp: [...supplies.stamps], repeat: [...supplies.repeats] }
+  const mixed: Mixed<T>[] = []
+  while (mixed.length < count && ordinary.length > 0) {
+    const draw = drawAt(place + mixed.length)
+    const kind = kindOf(draw, shares)
+    const from = kind === 'ordinary' ? [] : rest[kind]
+    if (from.length === 0) mixed.push({ kind: 'ordinary', item: ordinary.shift()! })
+    else mixed.push({ kind, item: from.splice(Math.floor(draw.pick * from.length), 1)[0] })
+  }
+  return mixed
+}
+
+/** Places ahead that are looked at one by one; beyond them the shares are enough. */
+const LOOKED_AT = 5000
+
+/**
+ * How many stamps are still to come among this many ordinary candidates: exactly, so that what is left falls by one with each look,
+ * whatever the look was at.
+ */
+export function stampsAhead(
+  ordinary: number,
+  stamps: number,
+  drawAt: (place: number) => PlaceDraw,
+  place: number,
+  shares: Shares,
+): number {
+  let [left, ahead] = [ordinary, 0]
+  for (let k = 0; k < LOOKED_AT && left > 0 && ahead < stamps; k++) {
+    if (kindOf(drawAt(place + k), shares) === 'stamp') ahead++
+    else left--
+  }
+  if (left === 0 || ahead === stamps) return ahead
+  return Math.min(stamps, ahead + Math.round((left * shares.calibration) / (1 - shares.calibration)))
+}
