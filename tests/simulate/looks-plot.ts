@@ -25,7 +25,7 @@ export function looksPlot(comparisons: readonly DesignComparison[]): string {
     `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${WIDTH} ${height}" role="img" font-family="system-ui, sans-serif" font-size="13">`,
     '<title>Looks per candidate against six looks each, for a catalogue as complete and as pure</title>',
     text(
-      LEFT,
+      10,
       20,
       'Bar: looks per candidate. Pale end: looks at calibration stamps. Tick: Wald’s number. Dashes: the aim.',
     ),

@@ -2,6 +2,7 @@
 import SQLite from 'better-sqlite3'
 import { Kysely, SqliteDialect } from 'kysely'
 import { migrateToLatest } from '@/db/migrator'
+import { queueSecret } from '@/db/queries/mixing'
 import { insertPerson, upsertMembership } from '@/db/queries/people'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
@@ -47,6 +48,8 @@ export interface SearchSite {
 /** Calibration stamps stand among the candidates in a drawn order, so that no id tells them apart. Nothing has pictures. */
 export async function openSearch(search: SimulatedSearch, rule: RuleInput): Promise<SearchSite> {
   const db = await openMemory()
+  // The places of calibration stamps are drawn with the site's secret: here it follows from the seed.
+  await queueSecret(db, () => `simulated ${search.scenario.seed}`)
   const leader = await addPerson(db, 'avocet', true)
   const input = CampaignInput.parse({
     name: 'Simulated',
