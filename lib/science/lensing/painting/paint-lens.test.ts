@@ -141,6 +141,8 @@ describe('a lens painted over a galaxy', () => {
       return Math.abs(((angle - brightest.positionAngleDeg + 540) % 360) - 180) < 40
     })
     expect(near).toBe(true)
+    // The simulated galaxy stands within half a pixel of the middle.
+    expect(Math.hypot(truth.middle.east, truth.middle.north)).toBeLessThan(0.2)
   })
 })
 

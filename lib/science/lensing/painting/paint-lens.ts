@@ -55,6 +55,8 @@ export interface PaintingTruth extends Painting {
   magnification: number
   /** Images of the middle of the source. */
   images: { east: number; north: number; magnification: number }[]
+  /** The middle of the galaxy from the middle of the picture. */
+  middle: { east: number; north: number }
   /** Where the light is, for a mark over the picture. */
   arcs: PaintedArc[]
 }
@@ -169,9 +171,15 @@ export function paint(
       north,
       magnification,
     })),
+    middle: middleOf(galaxy.grids[best], lights[best].plane),
     arcs: arcsOf(lights[best].light, lights[best].plane, galaxy.grids[best], painting.einsteinRadiusArcsec),
   }
   return { planes: painted.map(({ band, data }) => ({ band: band.band, data })), truth }
+}
+
+function middleOf({ x, y, a, b, c, d }: SkyGrid, { width, height }: PlaneToPaint): { east: number; north: number } {
+  const [dx, dy] = [x - (width - 1) / 2, y - (height - 1) / 2]
+  return { east: a * dx + b * dy, north: c * dx + d * dy }
 }
 
 const scaleOf = ({ a, b, c, d }: SkyGrid): number => Math.sqrt(Math.abs(a * d - b * c))
