@@ -71,7 +71,10 @@ export function BenchRest({
         <div className="flex flex-wrap items-center gap-x-5 gap-y-2">
           {resting ? (
             <Button onClick={onGoOn}>
-              <KeyCap>E</KeyCap> Go on grading
+              <span className="hidden md:inline">
+                <KeyCap>E</KeyCap>
+              </span>{' '}
+              Go on grading
             </Button>
           ) : null}
           {session.given.length > 0 ? <Button onClick={onLookBack}>Look back at the last one</Button> : null}

@@ -45,13 +45,22 @@ export function BenchSide({
             />
           </div>
           <div className="flex flex-wrap justify-between gap-x-4 md:contents short:flex">
-            <LightSection light={light} keys={keysOn} className={lightOpen ? 'max-md:basis-full' : 'max-md:grow'} />
-            <MeasureButtons tool={bench.tool} onTool={(tool) => run({ do: 'measure', tool })} />
+            <LightSection
+              light={light}
+              keys={keysOn}
+              className={`whitespace-nowrap short:gap-x-2 ${lightOpen ? 'max-md:basis-full short:basis-full' : 'max-md:grow'}`}
+            />
+            <div className={lightOpen ? 'max-md:hidden short:hidden' : 'contents'}>
+              <MeasureButtons tool={bench.tool} onTool={(tool) => run({ do: 'measure', tool })} />
+            </div>
           </div>
         </>
       ) : null}
       <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />
-      <div className="flex flex-wrap items-center justify-between gap-x-3 md:contents short:flex">
+      {/* One row whatever is said in it, so that the picture keeps its size. */}
+      <div
+        className={`flex items-center justify-between gap-x-3 md:contents short:flex short:flex-wrap ${bench.remarkOpen ? 'flex-wrap' : ''}`}
+      >
         {look ? (
           <RemarkBox
             remark={bench.draft.remark}
@@ -61,7 +70,7 @@ export function BenchSide({
             onWrite={bench.writeRemark}
           />
         ) : null}
-        <div className="flex grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 short:mt-0 short:grow short:flex-row short:items-center short:justify-between">
+        <div className="flex min-w-0 grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 short:mt-0 short:grow short:flex-row short:items-center short:justify-between">
           <SaveLine snapshot={bench.snapshot} slug={slug} />
           <div className="order-last flex gap-x-4 whitespace-nowrap md:order-first short:order-last">
             <button

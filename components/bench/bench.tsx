@@ -61,7 +61,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
   return (
     <KeyNames.Provider value={keyName}>
       <div className="night fixed inset-0 flex flex-col overflow-hidden overscroll-none bg-bench text-text [color-scheme:dark]">
-        <main className="flex min-h-0 flex-1 flex-col md:grid md:grid-cols-[minmax(0,1fr)_18.5rem] md:grid-rows-[auto_minmax(0,1fr)] short:grid short:grid-cols-[minmax(0,1fr)_14.5rem] short:grid-rows-[auto_minmax(0,1fr)]">
+        <main className="flex min-h-0 flex-1 flex-col md:grid md:grid-cols-[minmax(0,1fr)_18.5rem] md:grid-rows-[auto_minmax(0,1fr)] short:grid short:grid-cols-[minmax(0,1fr)_15.5rem] short:grid-rows-[auto_minmax(0,1fr)]">
           <div className="md:col-span-2 short:col-span-2">
             <ProgressHairline {...session.counts} />
             <p aria-live="polite" className="sr-only">

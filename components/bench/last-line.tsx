@@ -53,7 +53,7 @@ export function LastLine({
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
   const unclear = explainable(session)
   return (
-    <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-10 short:min-h-11 short:min-w-0 short:flex-1">
+    <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-9 short:min-h-11 short:min-w-0 short:flex-1">
       {hint ? (
         <span className="text-text">{hint}</span>
       ) : offer && session.lookingBack === null && !explaining ? (

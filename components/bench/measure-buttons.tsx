@@ -4,7 +4,7 @@ import type { Tool } from './measuring'
 
 export function MeasureButtons({ tool, onTool }: { tool: Tool | null; onTool: (tool: Tool) => void }) {
   return (
-    <div role="group" aria-label="Measure" className="flex gap-x-4">
+    <div role="group" aria-label="Measure" className="flex gap-x-4 short:gap-x-2">
       {(['ruler', 'circle'] as const).map((one) => (
         <button
           key={one}

@@ -35,7 +35,7 @@ export function RemarkBox({
         type="button"
         onBlur={(event) => event.currentTarget.removeAttribute(RETURNED_FOCUS)}
         onClick={letGo(onOpen)}
-        className="flex min-h-11 items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
+        className="flex min-h-11 min-w-24 items-center gap-2 text-left text-note text-mute hover:text-text md:min-h-7"
       >
         <span className="hidden md:inline">
           <KeyCap>M</KeyCap>

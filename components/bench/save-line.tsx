@@ -28,10 +28,13 @@ export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: s
     return () => clearTimeout(timer)
   }, [sentence, trouble])
   return (
-    <div className="text-note">
+    <div className="min-w-0 text-note">
       <p
         data-save-line
-        className={trouble || (snapshot.waiting.length > 0 && !snapshot.kept) ? 'text-alarm' : 'text-mute'}
+        title={sentence}
+        className={`${trouble?.signIn ? 'max-md:line-clamp-1' : 'max-md:line-clamp-2'} ${
+          trouble || (snapshot.waiting.length > 0 && !snapshot.kept) ? 'text-alarm' : 'text-mute'
+        }`}
       >
         {sentence}
       </p>
@@ -39,7 +42,7 @@ export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: s
         // The whole page goes to sign in and comes back to the bench.
         <a
           href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/bench`)}`}
-          className="inline-flex min-h-11 items-center underline underline-offset-4 md:min-h-7"
+          className="inline-flex min-h-6 items-center underline underline-offset-4 md:min-h-7"
         >
           Sign in and come back here
         </a>

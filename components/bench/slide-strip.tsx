@@ -16,7 +16,7 @@ export function SlideStrip({
     <div
       role="group"
       aria-label="Views"
-      className="flex snap-x gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pb-4 short:flex-col short:overflow-x-hidden short:overflow-y-auto short:px-3 short:pb-2"
+      className="flex snap-x scroll-px-3 gap-2.5 overflow-x-auto px-3 py-2 [justify-content:safe_center] md:px-6 md:pt-1 short:flex-col short:overflow-x-hidden short:overflow-y-auto short:px-3 short:pb-2"
     >
       {views.map(({ key, label, url, width, height, note }, index) => (
         <button

@@ -4,7 +4,7 @@ import type { Look } from './bench-session'
 /** So much work lies ready (our choice): longer than most networks are away, shorter than others would wait for it. */
 const WORK_SECONDS = 180
 const LEAST = 6
-export const MOST_READY = 50
+const MOST_READY = 50
 const RECENT = 20
 
 /** @returns how many to ask for, and how few lie ready when it is asked again. */

@@ -1,5 +1,5 @@
 import type { BrowserContext, Page } from 'playwright-core'
-import { expect } from 'vitest'
+import { expect, vi } from 'vitest'
 import { smallSearch } from '@/tests/_support/survey-files'
 import { EMAIL, PASSWORD, seedSite, signInCookie, SLUG } from '@/tests/_support/survey-site'
 import { makeDataFolder, startTestServer, type TestServer } from './_server'
@@ -12,16 +12,20 @@ export async function startBenchSite(candidates: number): Promise<TestServer> {
   await seedSite(dataFolder)
   const server = await startTestServer(dataFolder)
   const cookie = await signInCookie(server.url)
-  for (const file of smallSearch(candidates)) {
-    const url = `${server.url}/api/campaigns/${SLUG}/files/${file.name}`
-    const answer = await fetch(url, { method: 'PUT', headers: { cookie }, body: Buffer.from(file.bytes()) })
-    if (!answer.ok) throw new Error(`${file.name}: ${answer.status} ${await answer.text()}`)
+  const files = smallSearch(candidates)
+  const send = async () => {
+    for (let file = files.pop(); file; file = files.pop()) {
+      const url = `${server.url}/api/campaigns/${SLUG}/files/${file.name}`
+      const answer = await fetch(url, { method: 'PUT', headers: { cookie }, body: Buffer.from(file.bytes()) })
+      if (!answer.ok) throw new Error(`${file.name}: ${answer.status} ${await answer.text()}`)
+    }
   }
+  await Promise.all([send(), send(), send(), send()])
   const imaged = async () => {
     const answer = await fetch(`${server.url}/api/campaigns/${SLUG}/files?limit=1`, { headers: { cookie } })
     return ((await answer.json()) as { summary: { imaged: number } }).summary.imaged
   }
-  await expect.poll(imaged, { timeout: 120_000, interval: 300 }).toBe(3 * candidates)
+  await vi.waitFor(async () => expect(await imaged()).toBe(3 * candidates), { timeout: 120_000, interval: 300 })
   return server
 }
 

@@ -37,6 +37,8 @@ async function openBench(): Promise<void> {
   page = await context.newPage()
   page.setDefaultTimeout(20_000)
   errors = collectErrors(page)
+  // The browser notes 250 unless told otherwise.
+  await page.addInitScript(() => performance.setResourceTimingBufferSize(10_000))
   await page.goto(`${server.url}${BENCH}`)
   await page.waitForFunction(() => document.querySelector('[data-save-line]') !== null)
   await expect.poll(heading, { timeout: 20_000 }).toMatch(/^SWS\d{5}$/)
@@ -134,5 +136,31 @@ describe('fifty grades without a network', () => {
     await expect.poll(heading).toBe(names[names.length - 55])
     await page.keyboard.press('z')
     await expect.poll(heading).toBe(names[0])
+  })
+})
+
+describe('two tabs of one person', () => {
+  it('show the same number waiting, let go of what the other graded, and send it once', async () => {
+    const first = page
+    await first.keyboard.press('k')
+    await openBench()
+    const second = page
+    const name = (await headingOf(second))!
+    await expect.poll(() => headingOf(first), { timeout: 20_000 }).toBe(name)
+    await context.route('**/grade', (route) => (route.request().method() === 'PUT' ? route.abort() : route.continue()))
+    await untilGradable(first)
+    await first.keyboard.press('c')
+    await second.getByText(`You gave ${name} its C in another tab.`).waitFor()
+    expect(await headingOf(second)).not.toBe(name)
+    for (const tab of [first, second]) {
+      await expect.poll(() => tab.locator('[data-save-line]').first().textContent()).toMatch(/^1 waiting/)
+    }
+    await context.unroute('**/grade')
+    for (const tab of [first, second]) {
+      const line = () => tab.locator('[data-save-line]').first().textContent()
+      await expect.poll(line, { timeout: 60_000 }).toBe('All grades saved')
+    }
+    const grades = (await gradesInDatabase()).filter((grade) => grade.name === name)
+    expect(grades).toMatchObject([{ grade: 'C', replaces: null }])
   })
 })
