@@ -1,0 +1,5 @@
+import { BenchShape } from '@/components/bench/bench-shape'
+
+export default function LoadingPractice() {
+  return <BenchShape />
+}
