@@ -5,8 +5,7 @@ import { among, inCampaign } from './by-ids'
 import type { NewPlane } from './cutouts'
 import { upsertPlanes } from './cutouts'
 
-export const GALAXY_FILTERS = ['set aside', 'graded N', 'any'] as const
-export type GalaxyFilter = (typeof GALAXY_FILTERS)[number]
+export type GalaxyFilter = 'set aside' | 'graded N' | 'any'
 
 export interface GalaxyRow {
   id: number

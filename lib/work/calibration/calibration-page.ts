@@ -5,7 +5,6 @@ import {
   listCalibrationStamps,
   listEventDetails,
   listGalaxies,
-  type GalaxyFilter,
   type GalaxyRow,
   type StampRow,
 } from '@/db/queries/calibration'
@@ -14,6 +13,7 @@ import type { DB } from '@/db/schema'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type PictureView } from '@/lib/work/stamps/candidate-pictures'
+import type { GalaxyFilter } from './galaxy-filters'
 import { PAINTED, type PaintingDone } from './paint-stamps'
 
 export interface Galaxy extends GalaxyRow {
