@@ -13,11 +13,18 @@ interface Sent {
   person: string | null
 }
 
+/** The server has taken a grade. */
+export const taken = (replaced?: string) => Response.json({ grade: { id: 'x' }, replaced })
+
+/** The server understood and said no. */
+export const refusal = (type: string, detail: string, status = 409) =>
+  Response.json({ type: `urn:ringside:problem:${type}`, detail }, { status })
+
 /** A server that answers as a test says, and all that was sent to it. */
 export const room = {
   sent: [] as Sent[],
   queue: supply([1, 2, 3]),
-  answerGrade: (): Response | Promise<Response> => Response.json({}),
+  answerGrade: (): Response | Promise<Response> => taken(),
   /** What stands of one's own, for a bench that looks back. */
   standing: { answer: null, open: true } as unknown,
 }
@@ -27,7 +34,7 @@ export function freshRoom(): void {
   beforeEach(() => {
     room.sent = []
     room.queue = supply([1, 2, 3])
-    room.answerGrade = () => Response.json({})
+    room.answerGrade = () => taken()
     localStorage.clear()
     vi.stubGlobal('indexedDB', new IDBFactory())
     vi.stubGlobal('fetch', async (url: string, init: RequestInit = {}) => {

@@ -20,7 +20,7 @@ beforeEach(() => {
   vi.stubGlobal('fetch', async (url: string, init?: RequestInit) => {
     if (init?.method !== 'PUT') return Response.json(queue)
     sent.push({ url, body: JSON.parse(String(init.body)) })
-    return Response.json({})
+    return Response.json({ grade: { id: 'x' } })
   })
 })
 afterEach(() => vi.unstubAllGlobals())

@@ -1,6 +1,7 @@
 /** What the bench says to the server. Every other file of the bench works without a network. */
 import type { GradeLetter } from '@/db/schema/grading'
 import type { OwnAnswer } from '@/lib/work/grading/own-answer'
+import type { RecordedGrade } from '@/lib/work/grading/record-grade'
 import type { PERSON_HEADER } from '@/lib/work/people/person-header'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
 import type { Answer } from './bench-session'
@@ -41,6 +42,8 @@ const whose = ({ personId }: BenchOwner) => ({ [HEADER]: String(personId) })
 /** Longer than any answer takes, on a slow network too. */
 const ANSWER_MS = 30_000
 
+const SOMETHING_ELSE = 'Something else than Ringside answers under its address, perhaps the sign-in page of a network.'
+
 const root = (slug: string) => `/api/campaigns/${encodeURIComponent(slug)}`
 
 async function problemOf(response: Response): Promise<{ type: unknown; sentence: string }> {
@@ -65,8 +68,10 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
     return { outcome: 'trouble', sentence: 'The server cannot be reached.' }
   }
   if (response.ok) {
-    const { replaced } = (await response.json().catch(() => ({}))) as { replaced?: unknown }
-    return { outcome: 'saved', replaced: typeof replaced === 'string' }
+    const answer = (await response.json().catch(() => null)) as Partial<RecordedGrade> | null
+    // The sign-in page of a hotel's network answers 200 as well.
+    if (typeof answer?.grade?.id !== 'string') return { outcome: 'trouble', sentence: SOMETHING_ELSE }
+    return { outcome: 'saved', replaced: typeof answer.replaced === 'string' }
   }
   if (response.status === 401) {
     return {
@@ -86,7 +91,8 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
         'Somebody else has signed in in this browser. Your grades are kept here and go only once you are signed in again as yourself, in another tab.',
     }
   }
-  return { outcome: 'refused', sentence }
+  if (typeof type === 'string' && type.startsWith('urn:ringside:')) return { outcome: 'refused', sentence }
+  return { outcome: 'trouble', sentence: SOMETHING_ELSE }
 }
 
 /** @throws Error when nothing usable comes back. */

@@ -1,6 +1,6 @@
 import { screen, waitFor, within } from '@testing-library/react'
 import { beforeEach, describe, expect, it, vi } from 'vitest'
-import { freshRoom, grades, look, name, open, pause, room, saved } from './_bench-room'
+import { freshRoom, grades, look, name, open, pause, refusal, room, saved, taken } from './_bench-room'
 import { supply } from './_candidates'
 import { waitingGrade } from './_memory-store'
 
@@ -15,7 +15,7 @@ function warnsOnLeaving(): boolean {
 describe('a grade on its way', () => {
   it('tries again after a failure and never loses the grade', async () => {
     let failures = 1
-    room.answerGrade = () => (failures-- > 0 ? new Response(null, { status: 503 }) : Response.json({}))
+    room.answerGrade = () => (failures-- > 0 ? new Response(null, { status: 503 }) : taken())
     const { user } = await open()
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toMatch(/^1 waiting\. The server has trouble/))
@@ -32,25 +32,25 @@ describe('a grade on its way', () => {
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toMatch(/^1 waiting.*keeps nothing for this site/))
     expect(warnsOnLeaving()).toBe(true)
-    room.answerGrade = () => Response.json({})
+    room.answerGrade = () => taken()
     await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
     expect(warnsOnLeaving()).toBe(false)
   })
 
   it('waits with a way to sign in and come back when the session has run out', async () => {
-    room.answerGrade = () => Response.json({ detail: '' }, { status: 401 })
+    room.answerGrade = () => refusal('signed-out', '', 401)
     const { user } = await open()
     await user.keyboard('a')
     const link = await screen.findByRole('link', { name: /Sign in/ })
     expect(link).toHaveAttribute('href', '/signin?next=%2Fcampaigns%2Fnorth%2Fbench')
     expect(saved()).toMatch(/^1 waiting\. You are signed out/)
-    room.answerGrade = () => Response.json({})
+    room.answerGrade = () => taken()
     await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
     expect(screen.queryByRole('link', { name: /Sign in/ })).not.toBeInTheDocument()
   })
 
   it('says that a first grade replaced one given on another device', async () => {
-    room.answerGrade = () => Response.json({ replaced: 'other-id' })
+    room.answerGrade = () => taken('other-id')
     const { user } = await open()
     await user.keyboard('a')
     expect(await screen.findByText(/SWS-1/, { selector: 'p b' })).toBeInTheDocument()
@@ -65,7 +65,7 @@ describe('a grade on its way', () => {
     await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
     unmount()
     let release = () => {}
-    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(taken())))
     await open()
     expect(name()).toBe('SWS-2')
     expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuetext', '1 of 3')
@@ -77,7 +77,7 @@ describe('a grade on its way', () => {
 
   it('shows in words what the server refused, and does not count it', async () => {
     const detail = 'Others have filled this candidate.'
-    room.answerGrade = () => Response.json({ detail }, { status: 409 })
+    room.answerGrade = () => refusal('candidate-full', detail)
     const { user } = await open()
     await user.keyboard('a')
     const alert = await screen.findByRole('alert')
@@ -94,7 +94,7 @@ describe('a grade on its way', () => {
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toBe('All grades saved'))
     await look()
-    room.answerGrade = () => Response.json({ type: 'urn:ringside:problem:judgement-seen', detail }, { status: 409 })
+    room.answerGrade = () => refusal('judgement-seen', detail)
     await user.keyboard('z')
     await look()
     await user.keyboard('n')
@@ -115,12 +115,12 @@ describe('a grade on its way', () => {
   })
 
   it('keeps a grade, with a sentence, while somebody else is signed in, and sends it when the person is back', async () => {
-    room.answerGrade = () => Response.json({ type: 'urn:ringside:problem:other-person', detail: '' }, { status: 409 })
+    room.answerGrade = () => refusal('other-person', '')
     const { user } = await open()
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toMatch(/^1 waiting\. Somebody else has signed in in this browser/))
     expect(screen.queryByRole('alert')).not.toBeInTheDocument()
-    room.answerGrade = () => Response.json({})
+    room.answerGrade = () => taken()
     await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
   })
 })

@@ -1,7 +1,7 @@
 import { fireEvent, render, screen, waitFor } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
 import { describe, expect, it } from 'vitest'
-import { freshRoom, grades, look, name, open, pause, room, saved } from './_bench-room'
+import { freshRoom, grades, look, name, open, pause, room, saved, taken } from './_bench-room'
 import { benchCandidate, supply } from './_candidates'
 import { Bench } from './bench'
 
@@ -10,7 +10,7 @@ freshRoom()
 describe('the bench', () => {
   it('grades by key, shows the next at once, confirms, and sends in the background', async () => {
     let release = () => {}
-    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(Response.json({}))))
+    room.answerGrade = () => new Promise((resolve) => (release = () => resolve(taken())))
     const { user } = await open()
     await user.keyboard('b')
     expect(name()).toBe('SWS-2')

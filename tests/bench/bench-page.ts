@@ -136,6 +136,8 @@ export async function benchPage(held = HELD): Promise<string[]> {
     const page = await context.newPage()
     await signIn(page, run.url)
     const session = await context.newCDPSession(page)
+    // What runs this file wraps named functions in a helper of its own, which the page does not have.
+    await page.addInitScript('globalThis.__name = (named) => named')
     await page.addInitScript(watchPage)
     const scripts = await openBench(page, session, run.url)
     const heaps: number[] = []

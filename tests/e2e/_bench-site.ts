@@ -29,12 +29,16 @@ export async function startBenchSite(candidates: number): Promise<TestServer> {
   return server
 }
 
-export async function signIn(context: BrowserContext, url: string): Promise<void> {
-  const page = await context.newPage()
-  await page.goto(`${url}/signin`, { waitUntil: 'networkidle' })
+export async function fillSignIn(page: Page): Promise<void> {
   await page.getByLabel('E-mail').fill(EMAIL)
   await page.getByLabel('Password', { exact: true }).fill(PASSWORD)
   await page.keyboard.press('Enter')
+}
+
+export async function signIn(context: BrowserContext, url: string): Promise<void> {
+  const page = await context.newPage()
+  await page.goto(`${url}/signin`, { waitUntil: 'networkidle' })
+  await fillSignIn(page)
   await page.waitForURL((address) => address.pathname !== '/signin')
   await page.close()
 }

@@ -4,7 +4,7 @@ import path from 'node:path'
 import type { Browser, BrowserContext, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { openDatabase } from '@/db/connection'
-import { BENCH, headingOf, signIn, startBenchSite, untilGradable } from './_bench-site'
+import { BENCH, fillSignIn, headingOf, signIn, startBenchSite, untilGradable } from './_bench-site'
 import { collectErrors, launchBrowser } from './_browser'
 import { removeDataFolder, startTestServer, type TestServer } from './_server'
 
@@ -162,5 +162,23 @@ describe('two tabs of one person', () => {
     }
     const grades = (await gradesInDatabase()).filter((grade) => grade.name === name)
     expect(grades).toMatchObject([{ grade: 'C', replaces: null }])
+  })
+})
+
+describe('a session that has run out', () => {
+  it('keeps the grade, and signing in by the link comes back to the bench, from where it is sent', async () => {
+    await openBench()
+    await untilGradable(page)
+    const name = (await headingOf(page))!
+    await context.clearCookies()
+    await page.keyboard.press('b')
+    await page.getByRole('link', { name: 'Sign in and come back here' }).click()
+    await page.waitForURL('**/signin?next=**')
+    await page.waitForLoadState('networkidle')
+    await fillSignIn(page)
+    await page.waitForURL(`**${BENCH}`)
+    await expect.poll(saveLine, { timeout: 30_000 }).toBe('All grades saved')
+    const grades = (await gradesInDatabase()).filter((grade) => grade.name === name)
+    expect(grades).toMatchObject([{ grade: 'B', replaces: null }])
   })
 })
