@@ -3,6 +3,7 @@ import type { RuleVersion } from '@/lib/work/campaigns/change-settings'
 import { ButtonLink } from '@/components/ui/button'
 import { FormSection } from './form-section'
 import { counted } from './in-words'
+import { LookingForm, type Looking } from './looking-form'
 import { PageHead } from './page-head'
 import { RuleHistory } from './rule-history'
 import { NamePatternForm, RuleForm } from './settings-forms'
@@ -12,6 +13,9 @@ export function SettingsView({
   campaign,
   picturesHref,
   whatIfHref,
+  looking,
+  calibrationHref,
+  changeLooking,
   versions,
   changeRule,
   changeNamePattern,
@@ -19,6 +23,9 @@ export function SettingsView({
   campaign: { name: string; survey: string; acronym: string; bands: string[]; namePattern: string | null }
   picturesHref: string
   whatIfHref: string
+  looking: Looking
+  calibrationHref: string
+  changeLooking: FormAction
   versions: RuleVersion[]
   changeRule: FormAction
   changeNamePattern: FormAction
@@ -56,6 +63,17 @@ export function SettingsView({
       <FormSection title="Its history" about={`${counted(versions.length, 'version')}, newest first.`}>
         <RuleHistory versions={versions} />
       </FormSection>
+      <div id="looking" className="scroll-mt-6">
+        <FormSection
+          title="How people look"
+          about="What comes next at the bench, and what is mixed in to learn how reliable each pair of eyes is. Nobody can tell a calibration stamp from a candidate before grading it."
+        >
+          <LookingForm looking={looking} action={changeLooking} />
+          <ButtonLink href={calibrationHref} className="self-start">
+            Make calibration stamps
+          </ButtonLink>
+        </FormSection>
+      </div>
       <FormSection
         title="Pictures"
         about="The recipe that makes pictures of cutouts: views and their order, brightness, weights of the bands, close field, north up."

@@ -45,6 +45,7 @@ export interface CampaignSummary {
   survey: string
   acronym: string
   role: Role
+  usesSheet: 0 | 1
   method: Rule['method']
   /** How many people are to look at each candidate, at most. */
   gradesWanted: number
@@ -73,7 +74,15 @@ export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<C
         .on((e) => e.or([e('candidate.truth', 'is', null), e('membership.role', '=', 'grader')])),
     )
     .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
-    .select(['campaign.id', 'campaign.slug', 'campaign.name', 'campaign.survey', 'campaign.acronym', 'membership.role'])
+    .select([
+      'campaign.id',
+      'campaign.slug',
+      'campaign.name',
+      'campaign.survey',
+      'campaign.acronym',
+      'membership.role',
+      'campaign.uses_sheet as usesSheet',
+    ])
     .select((e) => [
       method.as('method'),
       wanted.as('gradesWanted'),
@@ -112,6 +121,14 @@ export async function listRules(db: Kysely<DB>, campaignId: number): Promise<(Ru
     .where('campaign_id', '=', campaignId)
     .orderBy('version', 'desc')
     .execute()
+}
+
+export async function setLooking(
+  db: Kysely<DB>,
+  campaignId: number,
+  looking: Pick<Campaign, 'queue_order' | 'calibration_share' | 'repeat_share' | 'practice_wanted'>,
+): Promise<void> {
+  await db.updateTable('campaign').set(looking).where('id', '=', campaignId).execute()
 }
 
 export async function setNamePattern(db: Kysely<DB>, campaignId: number, namePattern: string | null): Promise<void> {

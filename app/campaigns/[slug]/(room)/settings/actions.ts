@@ -4,7 +4,9 @@ import { revalidatePath } from 'next/cache'
 import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
 import { NamePatternInput } from '@/lib/work/campaigns/campaign-input'
+import { changeLooking } from '@/lib/work/campaigns/change-looking'
 import { changeNamePattern, changeRule } from '@/lib/work/campaigns/change-settings'
+import { LookingInput } from '@/lib/work/campaigns/looking-input'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
 
 export async function changeRuleAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
@@ -25,6 +27,17 @@ export async function changeNamePatternAction(slug: string, _before: FormState, 
     await changeNamePattern(db, permit, namePattern)
     revalidatePath(`/campaigns/${slug}`, 'layout')
     return { done: 'Saved. It holds for files that arrive from now on.' }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}
+
+export async function changeLookingAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await changeLooking(db, permit, LookingInput.parse(Object.fromEntries(form)))
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return { done: 'Saved. It holds for looks from now on.' }
   } catch (error) {
     return failedForm(error, form)
   }

@@ -3,7 +3,7 @@ import { permitPage } from '@/app/_lib/page-permit'
 import { SettingsView } from '@/components/campaigns/settings-view'
 import { fromJson } from '@/db/schema/values'
 import { listRuleVersions } from '@/lib/work/campaigns/change-settings'
-import { changeNamePatternAction, changeRuleAction } from './actions'
+import { changeLookingAction, changeNamePatternAction, changeRuleAction } from './actions'
 
 export const metadata: Metadata = { title: 'Settings' }
 
@@ -17,6 +17,14 @@ export default async function SettingsPage({ params }: PageProps<'/campaigns/[sl
       picturesHref={`/campaigns/${slug}/settings/pictures`}
       whatIfHref={`/campaigns/${slug}/what-if`}
       versions={await listRuleVersions(db, permit)}
+      looking={{
+        queueOrder: campaign.queue_order,
+        calibrationShare: campaign.calibration_share,
+        repeatShare: campaign.repeat_share,
+        practiceWanted: campaign.practice_wanted,
+      }}
+      calibrationHref={`/campaigns/${slug}/calibration`}
+      changeLooking={changeLookingAction.bind(null, slug)}
       changeRule={changeRuleAction.bind(null, slug)}
       changeNamePattern={changeNamePatternAction.bind(null, slug)}
     />
