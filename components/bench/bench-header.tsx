@@ -14,6 +14,7 @@ export function BenchHeader({
   counts: { given: number; left: number }
   candidate: BenchCandidate | null
 }) {
+  const all = (counts.given + counts.left).toLocaleString('en')
   return (
     <header className="flex flex-wrap items-center justify-between gap-x-6 px-3 pt-2 md:px-6 md:pt-3 short:flex-nowrap short:gap-x-3 short:px-3 short:pt-0">
       <div className="flex min-w-0 items-center gap-3">
@@ -28,8 +29,11 @@ export function BenchHeader({
         </Link>
         <span className="hidden truncate text-small font-semibold lg:inline short:hidden">{campaignName}</span>
         <span className="whitespace-nowrap text-note text-mute">
-          <span className="figures">{counts.given.toLocaleString('en')}</span> of{' '}
-          <span className="figures">{(counts.given + counts.left).toLocaleString('en')}</span>
+          {/* Room for the whole count from the start, so that nothing moves at ten and at a hundred. */}
+          <span className="figures inline-block text-right" style={{ minWidth: `${all.length}ch` }}>
+            {counts.given.toLocaleString('en')}
+          </span>{' '}
+          of <span className="figures">{all}</span>
           <span className="hidden sm:inline short:hidden"> graded by you</span>
         </span>
       </div>

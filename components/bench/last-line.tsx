@@ -1,3 +1,4 @@
+import { Fragment } from 'react'
 import { KeyCap } from '@/components/ui/key-cap'
 import { CANNOT_JUDGE_REASONS, type CannotJudgeReason } from '@/lib/work/grading/tags'
 import { currentLook, explainable, type BenchSession } from './bench-session'
@@ -52,21 +53,22 @@ export function LastLine({
   const look = currentLook(session)
   const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
   const unclear = explainable(session)
+  // Each case has its own key, so that a button of one is not moved to where the next has its.
   return (
     <div className="flex min-h-11 items-center gap-x-2 [justify-content:safe_center] overflow-x-auto px-3 text-note text-mute md:min-h-9 short:min-h-11 short:min-w-0 short:flex-1">
       {hint ? (
         <span className="text-text">{hint}</span>
       ) : offer && session.lookingBack === null && !explaining ? (
-        <>
+        <Fragment key="offer">
           <span role="status" className="text-text">
             {OFFERS[offer]}
           </span>
           <LineButton label="end the sitting" keyName="E" onPress={onRest} />
           <LineButton label="not now" keyName="Esc" onPress={onDecline} />
           <LineButton label="undo" keyName="Z" onPress={onUndo} />
-        </>
+        </Fragment>
       ) : session.lookingBack !== null && look?.answer ? (
-        <>
+        <Fragment key="back">
           <span>
             Looking back: you gave{' '}
             <b className={INK[look.answer.grade]}>
@@ -76,9 +78,9 @@ export function LastLine({
           </span>
           <LineButton label="keep it" keyName="K" onPress={onKeep} />
           {session.lookingBack > 0 ? <LineButton label="further" keyName="Z" onPress={onUndo} /> : null}
-        </>
+        </Fragment>
       ) : last ? (
-        <>
+        <Fragment key="last">
           <b className={`text-body ${INK[last.answer.grade]} ${explaining ? 'hidden md:inline' : ''}`}>
             {last.answer.grade}
           </b>
@@ -93,7 +95,7 @@ export function LastLine({
           {unclear && explaining ? (
             <ChoiceChips choices={CANNOT_JUDGE_REASONS} picked={[]} open onPick={onReason} />
           ) : null}
-        </>
+        </Fragment>
       ) : null}
     </div>
   )
