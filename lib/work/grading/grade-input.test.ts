@@ -7,6 +7,7 @@ describe('a grade as it arrives', () => {
       grade: 'A',
       asked: false,
       tags: [],
+      turned: null,
       remark: null,
       view: null,
       seconds: null,

@@ -27,6 +27,14 @@ export const GradeInput = z
       .transform((text) => text || null),
     /** The answer to a look that a lead asked for by name, as the queue told it. */
     asked: z.boolean('Say true where this answers an asked look.').default(false),
+    /** The answer to a candidate that came back turned, with the turn that the queue told. */
+    turned: z
+      .number('The turn is the number that the queue told.')
+      .int('The turn is the number that the queue told.')
+      .min(1, 'A turn is 1 to 7; leave it out where there is none.')
+      .max(7, 'A turn is 1 to 7; leave it out where there is none.')
+      .nullish()
+      .transform((turned) => turned ?? null),
     view: z
       .string()
       .max(40)

@@ -26,6 +26,7 @@ import { keepEstimate } from '@/lib/work/queue/keep-estimates'
 import { askAnsweredBy } from './asked-answer'
 import { consensusDelayMs } from './consensus-due'
 import type { GradeInput } from './grade-input'
+import { recordRepeat } from './repeat-answer'
 
 export interface GivenGrade {
   id: string
@@ -69,6 +70,10 @@ export async function recordGrade(
     }
     const standing = await findStandingAnswer(transaction, candidateId, viewer.id)
     const delivered = await isDelivered(transaction, candidateId, viewer.id, input)
+    if (input.turned !== null) {
+      const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
+      return recordRepeat(transaction, permit, candidateId, input, { recipeId, delivered })
+    }
     if (standing && delivered) return { row: standing, replaced: null }
     const ask = await askAnsweredBy(transaction, candidateId, viewer.id, { asked: input.asked, standing })
     const corrected = ask ? null : standing

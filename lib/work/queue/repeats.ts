@@ -1,0 +1,52 @@
+import 'server-only'
+import type { Kysely } from 'kysely'
+import { insertRepeatLooks, listOpenRepeats, listRepeatable, type RepeatCandidate } from '@/db/queries/repeats'
+import type { QueuedCandidate } from '@/db/queries/queue'
+import type { DB } from '@/db/schema'
+import type { PlaceDraw } from './person-stream'
+
+/** So many looks lie between the first and the second at least: long enough that the first answer is not remembered (our choice). */
+export const LOOKS_BETWEEN = 20
+/** Of the looks before those, so many are drawn from. */
+const DRAWN_FROM = 400
+
+interface Who {
+  campaignId: number
+  personId: number
+  now: string
+}
+
+export const repeatable = (db: Kysely<DB>, who: Who): Promise<QueuedCandidate[]> =>
+  listRepeatable(db, who, { looksAgo: LOOKS_BETWEEN, limit: DRAWN_FROM })
+
+/** 1 to 7: never as it was. */
+export const turnOf = ({ pick }: PlaceDraw): number => 1 + (Math.floor(pick * 6_999_993) % 7)
+
+/** Brings candidates back. Nothing is lent: a repeated look takes no place of the wanted number. */
+export async function bringBack(
+  db: Kysely<DB>,
+  who: Who,
+  candidates: readonly { item: QueuedCandidate; draw: PlaceDraw }[],
+): Promise<RepeatCandidate[]> {
+  const looks = candidates.map(({ item, draw }) => ({ ...item, turned: turnOf(draw) }))
+  await insertRepeatLooks(
+    db,
+    who,
+    looks.map(({ id, turned }) => ({ candidateId: id, turned })),
+    who.now,
+  )
+  return looks
+}
+
+/** What waits for an answer, put among what the person holds at a place that stays the same while it waits. */
+export async function amongHeld<T extends { id: number }>(
+  db: Kysely<DB>,
+  who: Who,
+  held: readonly T[],
+): Promise<(T | RepeatCandidate)[]> {
+  const together: (T | RepeatCandidate)[] = [...held]
+  for (const repeat of await listOpenRepeats(db, who)) {
+    together.splice(Math.min(together.length, 1 + (repeat.id % 3)), 0, repeat)
+  }
+  return together
+}
