@@ -7,6 +7,7 @@ import * as looksAsked from './006-looks-asked'
 import * as reliability from './007-reliability'
 import * as jobHolder from './008-job-holder'
 import * as gradingRoom from './009-grading-room'
+import * as queueCounts from './010-queue-counts'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -18,4 +19,5 @@ export const migrations: Record<string, Migration> = {
   '007-reliability': reliability,
   '008-job-holder': jobHolder,
   '009-grading-room': gradingRoom,
+  '010-queue-counts': queueCounts,
 }

@@ -46,14 +46,13 @@ export async function findMix(db: Kysely<DB>, campaignId: number): Promise<MixOf
 /** Looks that this person has given, corrections and asked looks left out: the place in their queue. */
 export async function countLooks(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
   const row = await db
-    .selectFrom('grade')
-    .select((e) => e.fn.countAll<number>().as('n'))
+    .selectFrom('look_count')
+    .select((e) => e.fn.sum<number | null>('n').as('n'))
     .where('campaign_id', '=', campaignId)
     .where('person_id', '=', personId)
     .where('occasion', 'in', ['first', 'repeat'])
-    .where('replaces', 'is', null)
     .executeTakeFirstOrThrow()
-  return row.n
+  return row.n ?? 0
 }
 
 /** Calibration stamps that this person has neither graded nor answered in practice, and does not hold. */

@@ -1,5 +1,6 @@
 import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
+import { listOpenBuckets } from './queue-walk'
 
 /** Whose queue it is, and how many grades a candidate of the campaign may have. */
 export interface Asker {
@@ -8,35 +9,30 @@ export interface Asker {
   gradesWanted: number
   /** Candidates that are settled want no more looks, unless a lead has asked for one. */
   untilSettled: boolean
+  /** Only what the first pass has sent on is served. */
+  usesSheet: boolean
   now: string
 }
 
 const DECIDING_RULINGS = ['confirmed', 'set aside'] as const
 
-/** Why a candidate still wants looks: the rule wants more, or a lead has asked for more than it wants. */
-type Wanted = 'by rule' | 'by lead' | 'either'
+/** Why a candidate still wants looks: a lead has asked for more than the rule wants, or the rule or a lead wants them. */
+type Wanted = 'by lead' | 'either'
 
-type WantedLooks = Pick<Asker, 'gradesWanted' | 'untilSettled'>
+type WantedLooks = Pick<Asker, 'gradesWanted' | 'untilSettled' | 'usesSheet'>
 
-/**
- * The parts 'by rule' and 'by lead' share no candidate; each walks an index of its own: `candidate_queue`, or where looks end with
- * settling `candidate_look`, and `candidate_asked`.
- */
+const notSentOn = ({ usesSheet }: WantedLooks) =>
+  usesSheet ? sql<SqlBool>`candidate.first_pass <> 'sent on'` : sql<SqlBool>`false`
+
+/** 'by lead' walks the index `candidate_asked`; what the rule wants is walked as queue-walk.ts says, and shares no candidate with it. */
 const WANTED: Record<Wanted, (asker: WantedLooks) => RawBuilder<SqlBool>> = {
-  'by rule': ({ gradesWanted, untilSettled }) =>
-    untilSettled
-      ? sql<SqlBool>`candidate.settled = 0 and +candidate.grades_given < ${gradesWanted}`
-      : sql<SqlBool>`candidate.grades_given < ${gradesWanted}`,
-  'by lead': ({ gradesWanted, untilSettled }) =>
-    untilSettled
-      ? sql<SqlBool>`candidate.looks_asked > candidate.grades_given
-          and (+candidate.grades_given >= ${gradesWanted} or +candidate.settled = 1)`
-      : sql<SqlBool>`candidate.looks_asked > candidate.grades_given and +candidate.grades_given >= ${gradesWanted}`,
-  either: ({ gradesWanted, untilSettled }) =>
-    untilSettled
-      ? sql<SqlBool>`+candidate.grades_given < max(${gradesWanted}, candidate.looks_asked)
-          and (+candidate.settled = 0 or candidate.looks_asked > candidate.grades_given)`
-      : sql<SqlBool>`+candidate.grades_given < max(${gradesWanted}, candidate.looks_asked)`,
+  'by lead': (asker) =>
+    sql<SqlBool>`candidate.looks_asked > candidate.grades_given and (+candidate.grades_given >= ${asker.gradesWanted}
+      or (${asker.untilSettled ? 1 : 0} and +candidate.settled = 1) or ${notSentOn(asker)})`,
+  either: (asker) =>
+    sql<SqlBool>`+candidate.grades_given < max(${asker.gradesWanted}, candidate.looks_asked)
+      and (candidate.looks_asked > candidate.grades_given
+        or ((${asker.untilSettled ? 0 : 1} or +candidate.settled = 0) and not ${notSentOn(asker)}))`,
 }
 
 /** Everybody may see a calibration stamp, whatever the wanted number; those are mixed in, not lent for being wanted. */
@@ -130,50 +126,12 @@ export async function listNextByLead(db: Kysely<DB>, asker: Asker, limit: number
   )
 }
 
-/** What may be lent to this person next: those nearest to their wanted number, so that candidates get finished. */
-export async function listNextByRule(db: Kysely<DB>, asker: Asker, limit: number): Promise<QueuedCandidate[]> {
-  return lendable(db, asker, 'by rule')
-    .select(SHOWN)
-    .orderBy('candidate.grades_given', 'desc')
-    .orderBy('candidate.id')
-    .limit(limit)
-    .execute()
-}
-
-export interface ValuedCandidate extends QueuedCandidate {
-  /** Of its estimate; null without one. */
-  evidence: number | null
-  probability: number | null
-  grades: number | null
-  /** Live leases of other people. */
-  heldByOthers: number
-  /** Looks that could still be given, if nobody else had it on the bench. */
-  room: number
-}
-
-/**
- * What may be lent to this person next, where a look tells most first, with what its worth is judged by. Whether others have taken
- * the room is left to the caller, because counting their leases once a row is what costs most here.
- */
-export async function listNextByValue(db: Kysely<DB>, asker: Asker, limit: number): Promise<ValuedCandidate[]> {
-  return notOnBench(db, asker, 'by rule')
-    .leftJoin('estimate', 'estimate.candidate_id', 'candidate.id')
-    .select(SHOWN)
-    .select(['estimate.evidence', 'estimate.probability', 'estimate.grades'])
-    .select(othersLeases(asker).as('heldByOthers'))
-    .select(sql<number>`max(${asker.gradesWanted}, candidate.looks_asked) - candidate.grades_given`.as('room'))
-    .orderBy('candidate.look_value', 'desc')
-    .orderBy('candidate.id')
-    .limit(limit)
-    .execute()
-}
-
 /** Open to this person, with room for one more look, and not on their bench yet. */
-function lendable(db: Kysely<DB>, asker: Asker, wanted: 'by lead' | 'by rule') {
+function lendable(db: Kysely<DB>, asker: Asker, wanted: 'by lead') {
   return notOnBench(db, asker, wanted).where(hasRoom(asker))
 }
 
-function notOnBench(db: Kysely<DB>, asker: Asker, wanted: 'by lead' | 'by rule') {
+function notOnBench(db: Kysely<DB>, asker: Asker, wanted: 'by lead') {
   return openTo(db, asker, wanted).where((e) =>
     e.not(
       e.exists(
@@ -199,28 +157,24 @@ export async function countOthersLeases(db: Kysely<DB>, { campaignId, personId, 
   return row.n
 }
 
-/** How many candidates this person may still be shown, those on other people's benches included. */
+/** How many candidates this person may still be shown, those on other people's benches included: counters, and a few rows. */
 export async function countOpenCandidates(db: Kysely<DB>, asker: Asker): Promise<number> {
-  let open = 0
-  for (const wanted of ['by rule', 'by lead'] as const) {
-    const row = await openTo(db, asker, wanted)
-      .select((e) => e.fn.countAll<number>().as('n'))
-      .executeTakeFirstOrThrow()
-    open += row.n
-  }
-  return open
+  const byRule = (await listOpenBuckets(db, asker)).reduce((sum, { open }) => sum + open, 0)
+  const byLead = await openTo(db, asker, 'by lead')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .executeTakeFirstOrThrow()
+  return byRule + byLead.n
 }
 
 export async function countGradedCandidates(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
   const row = await db
-    .selectFrom('grade')
-    .select((e) => e.fn.countAll<number>().as('n'))
+    .selectFrom('look_count')
+    .select('n')
     .where('campaign_id', '=', campaignId)
     .where('person_id', '=', personId)
     .where('occasion', '=', 'first')
-    .where('replaces', 'is', null)
-    .executeTakeFirstOrThrow()
-  return row.n
+    .executeTakeFirst()
+  return row?.n ?? 0
 }
 
 export async function hasImagedCandidate(db: Kysely<DB>, campaignId: number): Promise<boolean> {

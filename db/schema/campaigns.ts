@@ -35,6 +35,8 @@ export interface MembershipTable {
   role: Role
   /** Stands for the person in releases; never changes. */
   pseudonym: string
+  /** Whether a lead has asked this person to make the first pass over the sheet. */
+  passes: Generated<0 | 1>
   created_at: IsoTime
   ended_at: IsoTime | null
 }

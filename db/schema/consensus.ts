@@ -46,6 +46,8 @@ export interface RunTable {
   newest_candidate_id: number
   /** The newest decision on leaving graders out that it read; 0 for none. */
   newest_left_out_id: Generated<number>
+  /** The newest mark of the first pass that it read; 0 where the campaign used no sheet. */
+  newest_sheet_mark_id: Generated<number>
   summary: Json<RunSummary>
   /** Of the reliability method: what was fitted. */
   model: Json<RunModel> | null

@@ -76,3 +76,32 @@ export interface RepeatLookTable {
   lent_at: IsoTime
   grade_id: number | null
 }
+
+/** Whose sheet a candidate of the first pass lies on. */
+export interface SheetLeaseTable {
+  candidate_id: number
+  campaign_id: number
+  person_id: number
+  until: IsoTime
+}
+
+/**
+ * Imaged candidates that no ruling has decided, calibration stamps left out, by what decides whether they are lent: of person 0
+ * all, of a person those that they have graded. Triggers keep it with every change.
+ */
+export interface QueueCountTable {
+  campaign_id: number
+  person_id: number
+  grades_given: number
+  settled: 0 | 1
+  first_pass: 'waiting' | 'sent on' | 'dropped'
+  n: number
+}
+
+/** Looks that a person has given, corrections left out. A trigger keeps it with every grade. */
+export interface LookCountTable {
+  campaign_id: number
+  person_id: number
+  occasion: GradeRow['occasion']
+  n: number
+}

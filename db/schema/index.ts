@@ -6,8 +6,11 @@ import type {
   GradeTable,
   JudgementShownTable,
   LeaseTable,
+  LookCountTable,
   PracticeAnswerTable,
+  QueueCountTable,
   RepeatLookTable,
+  SheetLeaseTable,
   SheetMarkTable,
 } from './grading'
 import type {
@@ -42,6 +45,9 @@ export interface DB {
   grade: GradeTable
   judgement_shown: JudgementShownTable
   sheet_mark: SheetMarkTable
+  sheet_lease: SheetLeaseTable
+  queue_count: QueueCountTable
+  look_count: LookCountTable
   practice_answer: PracticeAnswerTable
   repeat_look: RepeatLookTable
   run: RunTable

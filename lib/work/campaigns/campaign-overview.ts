@@ -67,7 +67,7 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     ruleInForce(db, campaign.id),
     countCandidates(db, campaign.id, counted.withCalibration),
   ])
-  const asker = askerOf(campaign.id, viewer.id, rule, isoTime())
+  const asker = askerOf(campaign, viewer.id, rule, isoTime())
   const [grading, left, lookedAt, outcome, upkeep] = await Promise.all([
     sumLooks(db, counted, rule.gradesWanted),
     role === 'viewer' ? 0 : countOpenCandidates(db, asker),

@@ -33,14 +33,17 @@ export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Prom
   const now = isoTime()
   const rows = await listCampaignRows(db, viewer.id)
   return Promise.all(
-    rows.map(async ({ id, method, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
+    rows.map(async ({ id, usesSheet, method, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
       ...row,
       gradesGiven: looksGiven,
       gradesWanted: looksWanted,
       left:
         row.role === 'viewer'
           ? null
-          : await countOpenCandidates(db, askerOf(id, viewer.id, { method, gradesWanted }, now)),
+          : await countOpenCandidates(
+              db,
+              askerOf({ id, uses_sheet: usesSheet }, viewer.id, { method, gradesWanted }, now),
+            ),
       confirmed: row.role === 'grader' ? null : confirmed,
       split: row.role === 'grader' ? null : split,
     })),

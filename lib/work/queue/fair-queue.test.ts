@@ -5,6 +5,7 @@ import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
 import { Problem } from '@/lib/platform/problems/problem'
+import { countersAndRecount } from '@/tests/_support/recount-queue'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { giveBack } from './give-back'
 import { LEASE_MS } from './lease-time'
@@ -123,6 +124,8 @@ async function assertInvariants({ db }: Scenario, gradesWanted: number): Promise
     .select('lease.id')
     .execute()
   expect(lentThough).toEqual([])
+  const { kept, counted } = await countersAndRecount(db)
+  expect(kept).toEqual(counted)
 }
 
 async function gradeUntilNothingIsLeft(table: Table): Promise<void> {
@@ -146,8 +149,10 @@ it('never goes beyond the wanted number, shows nobody a candidate twice, and ser
       fc.integer({ min: 1, max: 4 }),
       fc.integer({ min: 1, max: 6 }),
       moments,
-      async (wanted, n, steps) => {
+      fc.constantFrom('most needed' as const, 'score' as const, 'shuffled' as const),
+      async (wanted, n, steps, order) => {
         const table = await openTable(wanted, n)
+        await table.db.updateTable('campaign').set({ queue_order: order }).execute()
         for (const together of steps) {
           await Promise.all(together.map((step) => take(table, step)))
           await assertInvariants(table, wanted)

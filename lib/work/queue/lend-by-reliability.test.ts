@@ -1,6 +1,7 @@
 import { CompiledQuery, type Kysely } from 'kysely'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
-import { listNextByLead, listNextByRule, listNextByValue } from '@/db/queries/queue'
+import { listNextByLead } from '@/db/queries/queue'
+import { listInHashRange, listOpenBuckets, walkBucket, type WalkOrder } from '@/db/queries/queue-walk'
 import type { DB } from '@/db/schema'
 import type { Answer } from '@/lib/science/agreement/grades'
 import { changeRule } from '@/lib/work/campaigns/change-settings'
@@ -145,19 +146,37 @@ async function plansOf(ask: (db: Kysely<DB>) => Promise<unknown>): Promise<strin
 }
 
 describe('what it serves is found', () => {
-  const asker = { campaignId: 1, personId: 2, gradesWanted: 4, untilSettled: true, now: '2026-01-01T00:00:00.000Z' }
+  const asker = {
+    campaignId: 1,
+    personId: 2,
+    gradesWanted: 4,
+    untilSettled: true,
+    usesSheet: false,
+    now: '2026-01-01T00:00:00.000Z',
+  }
+  const bucket = { gradesGiven: 1, firstPass: 'sent on', open: 9, size: 9 } as const
+  const from = { key: 0.5, id: 3 }
+  const along = (order: WalkOrder) => (db: Kysely<DB>) =>
+    walkBucket(db, asker, { bucket, order, from, limit: 10, most: null })
 
   it.each([
-    ['the most informative', 'candidate_look', listNextByValue, asker],
-    ['what is nearest to its number', 'candidate_queue', listNextByRule, { ...asker, untilSettled: false }],
-    ['what a lead reopened', 'candidate_asked', listNextByLead, asker],
-  ] as const)('by an index: %s by %s, without a look at the rest of the campaign', async (_, index, list, who) => {
-    const plans = await plansOf((db) => list(db, who, 10))
-    expect(plans.join('\n')).toContain(`SEARCH candidate USING INDEX ${index} (campaign_id=?`)
-    expect(plans.filter((step) => step.startsWith('SCAN'))).toEqual([])
+    ['the most informative', 'candidate_queue_look (campaign_id=? AND grades_given=? AND', along('look')],
+    ['the highest score', 'candidate_queue_score (campaign_id=? AND grades_given=? AND', along('score')],
+    ['what is nearest to its number', 'candidate_queue (campaign_id=? AND grades_given=? AND', along('number')],
+    [
+      'a part in random order',
+      'candidate_queue_shuffled (<expr>=? AND <expr>>? AND <expr><?',
+      (db: Kysely<DB>) => listInHashRange(db, asker, { from: 0, to: 9 }),
+    ],
+    ['what a lead reopened', 'candidate_asked (campaign_id=?', (db: Kysely<DB>) => listNextByLead(db, asker, 10)],
+    ['how many are open', 'PRIMARY KEY (campaign_id=? AND person_id=?', (db: Kysely<DB>) => listOpenBuckets(db, asker)],
+  ] as const)('by an index, without a look at the rest of the campaign: %s', async (_, index, list) => {
+    const plans = await plansOf(list)
+    expect(plans.join('\n')).toContain(index)
+    expect(plans.filter((step) => step.startsWith('SCAN') && !/^SCAN candidate$/.test(step))).toEqual([])
   })
 
-  it('in order, so that nothing is sorted', async () => {
-    expect((await plansOf((db) => listNextByValue(db, asker, 10))).join()).not.toMatch(/TEMP B-TREE/)
+  it.each(['look', 'score', 'number'] as const)('in order, so that nothing is sorted: by %s', async (order) => {
+    expect((await plansOf(along(order))).join()).not.toMatch(/TEMP B-TREE/)
   })
 })

@@ -7,13 +7,12 @@ import {
   insertLeases,
   listLentCandidates,
   listNextByLead,
-  listNextByRule,
-  listNextByValue,
   setLeasesUntil,
   type Asker,
   type QueuedCandidate,
 } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
+import type { Campaign } from '@/db/schema/campaigns'
 import type { IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import { waldBoundaries } from '@/lib/science/agreement/sequential-test'
@@ -26,12 +25,22 @@ import { LEASE_MS, MOST_LENT } from './lease-time'
 import { ratesIn } from './lens-estimate'
 import { kindOf, mix } from './mix'
 import { newestModel } from './model-of-run'
-import { personStream } from './person-stream'
+import { orderSeed, personStream } from './person-stream'
+import { walkMarks, type WalkMarks } from './walk-marks'
+import { walkQueue } from './walk-queue'
+import { walkShuffled } from './walk-shuffled'
 
 export interface LentCandidates {
   candidates: (QueuedCandidate | AskedCandidate)[]
   /** When the leases run out, unless asked again before. */
   until: IsoTime
+}
+
+interface QueuePlan {
+  rule: RuleInForce
+  /** Of the mean method. */
+  order: Campaign['queue_order']
+  marks: WalkMarks
 }
 
 /**
@@ -49,7 +58,8 @@ export async function lendCandidates(
     const rule = await ruleInForce(transaction, campaign.id)
     const now = isoTime()
     const until = isoTime(LEASE_MS)
-    const asker = askerOf(campaign.id, viewer.id, rule, now)
+    const asker = askerOf(campaign, viewer.id, rule, now)
+    const plan = { rule, order: campaign.queue_order, marks: walkMarks(db) }
     await deleteExpiredLeases(transaction, campaign.id, now)
     const asked = await askedLooks(transaction, asker, wanted)
     const room = wanted - asked.length
@@ -59,7 +69,7 @@ export async function lendCandidates(
       await setLeasesUntil(transaction, viewer.id, ids, until)
     }
     const more = room - held.length
-    const next = more > 0 ? await listMixed(transaction, asker, rule, { asked, held: held.length, more }) : []
+    const next = more > 0 ? await listMixed(transaction, asker, plan, { asked, held: held.length, more }) : []
     if (next.length > 0) {
       const candidateIds = next.map(({ id }) => id)
       await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
@@ -72,10 +82,10 @@ export async function lendCandidates(
 async function listMixed(
   transaction: Kysely<DB>,
   asker: Asker,
-  rule: RuleInForce,
+  plan: QueuePlan,
   { asked, held, more }: { asked: readonly AskedCandidate[]; held: number; more: number },
 ): Promise<QueuedCandidate[]> {
-  const wanted = await listNext(transaction, asker, rule, more + asked.length)
+  const wanted = await listNext(transaction, asker, plan, more + asked.length)
   const ordinary = besides(asked, wanted).slice(0, more)
   const { calibrationShare, stamps } = await findMix(transaction, asker.campaignId)
   if (stamps === 0 || calibrationShare === 0 || ordinary.length === 0) return ordinary
@@ -92,17 +102,22 @@ async function listMixed(
 async function listNext(
   transaction: Kysely<DB>,
   asker: Asker,
-  rule: RuleInForce,
+  plan: QueuePlan,
   limit: number,
 ): Promise<QueuedCandidate[]> {
   const reopened = await listNextByLead(transaction, asker, limit)
   const rest = limit - reopened.length
   if (rest <= 0) return reopened
-  const wanted =
-    rule.method === 'mean'
-      ? await listNextByRule(transaction, asker, rest)
-      : await listMostInformative(transaction, asker, rule, rest)
-  return [...reopened, ...wanted]
+  const { rule, order, marks } = plan
+  if (rule.method === 'reliability') {
+    return [...reopened, ...(await listMostInformative(transaction, asker, { rule, marks }, rest))]
+  }
+  if (order === 'shuffled') {
+    const seed = await orderSeed(transaction, asker.campaignId, asker.personId)
+    return [...reopened, ...(await walkShuffled(transaction, asker, { seed, limit: rest, marks }))]
+  }
+  const by = { order: order === 'score' ? order : 'number', limit: rest, marks } as const
+  return [...reopened, ...(await walkQueue(transaction, asker, by)).map(asQueued)]
 }
 
 /** Candidates among which a grader's next is chosen, and one more for each that somebody else holds, up to the most. */
@@ -113,14 +128,14 @@ const MOST_IN_REACH = 400
 async function listMostInformative(
   transaction: Kysely<DB>,
   asker: Asker,
-  rule: Extract<RuleInForce, { method: 'reliability' }>,
+  { rule, marks }: { rule: Extract<RuleInForce, { method: 'reliability' }>; marks: WalkMarks },
   limit: number,
 ): Promise<QueuedCandidate[]> {
   const others = await countOthersLeases(transaction, asker)
-  const rows = await listNextByValue(transaction, asker, Math.min(IN_REACH + others, MOST_IN_REACH))
+  const reach = Math.min(IN_REACH + others, MOST_IN_REACH)
+  const rows = await walkQueue(transaction, asker, { order: 'look', limit: reach, marks })
   const run = await newestModel(transaction, asker.campaignId)
-  const free = rows.filter(({ heldByOthers, room }) => heldByOthers < room)
-  const inReach = free.map(({ evidence, probability, grades, ...row }) => ({
+  const inReach = rows.map(({ evidence, probability, grades, ...row }) => ({
     ...row,
     evidence: evidence ?? 0,
     probability: probability ?? run?.model.lensShare ?? 0.5,
@@ -132,5 +147,7 @@ async function listMostInformative(
     boundaries: waldBoundaries(rule),
     leastGrades: rule.leastGrades,
   }
-  return chooseLooks(inReach, chooser, limit).map(({ id, name, raDeg, decDeg }) => ({ id, name, raDeg, decDeg }))
+  return chooseLooks(inReach, chooser, limit).map(asQueued)
 }
+
+const asQueued = ({ id, name, raDeg, decDeg }: QueuedCandidate): QueuedCandidate => ({ id, name, raDeg, decDeg })

@@ -50,3 +50,9 @@ export async function personStream(db: Kysely<DB>, campaignId: number, personId:
   kept.set(key, stream)
   return stream
 }
+
+/** What the random order of a person's queue in a campaign is made of: 32 bits that do not change. */
+export async function orderSeed(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
+  const secret = await queueSecret(db, () => randomBytes(32).toString('base64url'))
+  return createHmac('sha256', secret).update(`order:${campaignId}:${personId}`).digest().readInt32LE(0)
+}

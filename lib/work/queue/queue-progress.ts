@@ -20,7 +20,7 @@ export interface QueueProgress {
 
 export async function queueProgress(db: Kysely<DB>, permit: CampaignPermit<'grade'>): Promise<QueueProgress> {
   const { campaign, viewer } = permit
-  const asker = askerOf(campaign.id, viewer.id, await ruleInForce(db, campaign.id), isoTime())
+  const asker = askerOf(campaign, viewer.id, await ruleInForce(db, campaign.id), isoTime())
   const asks = await countAsks(db, asker)
   const open = await countOpenCandidates(db, asker)
   return {
