@@ -10,7 +10,7 @@ import { imageFolder, median, SAME_FOUR, verdict, writeCutouts, type Run } from 
 import { floorOfOwnEncoder, floorOfSharp, type Picture } from './_encoder-floors'
 import { timeOfViews } from './_view-times'
 
-const CANDIDATES = 240
+const CANDIDATES = 960
 const ROUNDS = 3
 /** The aims: so many times the script for its four pictures, and so many times the encoder's floor at most. */
 const AIM_PEER = 4
