@@ -1,4 +1,4 @@
-import { sql, type Kysely } from 'kysely'
+import type { Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { GradeLetter } from '../schema/grading'
 import type { Json } from '../schema/values'
@@ -123,26 +123,6 @@ export async function countPracticeAnswers(
     .where('practice_answer.person_id', '=', personId)
     .where('candidate.truth', 'is not', null)
     .groupBy(['candidate.truth', 'practice_answer.grade'])
-    .$narrowType<{ truth: 'lens' | 'not a lens' }>()
-    .execute()
-}
-
-/** A person's standing first grades of calibration stamps at the bench, by truth and grade. */
-export async function countCalibrationGrades(
-  db: Kysely<DB>,
-  campaignId: number,
-  personId: number,
-): Promise<TruthAndGrade[]> {
-  return db
-    .selectFrom('grade')
-    .innerJoin('candidate', 'candidate.id', 'grade.candidate_id')
-    .select((e) => ['candidate.truth', 'grade.grade', e.fn.countAll<number>().as('n')])
-    .where('grade.campaign_id', '=', campaignId)
-    .where('grade.person_id', '=', personId)
-    .where('grade.occasion', '=', 'first')
-    .where('candidate.truth', 'is not', null)
-    .where(sql<boolean>`not exists (select 1 from grade later where later.replaces = grade.id)`)
-    .groupBy(['candidate.truth', 'grade.grade'])
     .$narrowType<{ truth: 'lens' | 'not a lens' }>()
     .execute()
 }

@@ -150,3 +150,13 @@ export async function practiceFirst(
   // Stamps that lie on the bench, or were graded, cannot be practised on: nobody is kept out for want of them.
   return (await nextStamp(db, permit, counts)) ? { wanted, answered: counts.answered } : null
 }
+
+/** Whether practice is worth a place in the navigation: it has something to show, or has been done. Viewers do not grade. */
+export async function practiceUseful(
+  db: Kysely<DB>,
+  { campaign, viewer, role }: CampaignPermit<'read'>,
+): Promise<boolean> {
+  if (role === 'viewer') return false
+  const counts = await findPracticeCounts(db, campaign.id, viewer.id)
+  return counts.stamps > 0 && counts.answered < mostPractice(counts)
+}

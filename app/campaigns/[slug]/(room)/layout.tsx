@@ -1,6 +1,7 @@
 import { permitPage } from '@/app/_lib/page-permit'
 import { Shell, type ShellLink } from '@/components/shell/shell'
 import { campaignCounts } from '@/lib/work/campaigns/campaign-counts'
+import { practiceUseful } from '@/lib/work/calibration/practice'
 import { waitingFor } from '@/lib/work/discussion/list-mentions'
 
 /** The places of one campaign. What each page shows is checked by the page itself: layouts do not run again on navigation. */
@@ -16,6 +17,8 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
   const links: ShellLink[] = [
     { href: home, label: 'Overview', exact: true },
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/bench`, label: 'Bench' }]),
+    ...((await practiceUseful(db, permit)) ? [{ href: `${home}/practice`, label: 'Practice' }] : []),
+    ...(permit.role === 'viewer' ? [] : [{ href: `${home}/me`, label: 'Your looks' }]),
     ...(lead ? [{ href: `${home}/intake`, label: 'Intake' }] : []),
     { href: `${home}/candidates`, label: 'Candidates', count: count('candidates') },
     ...(lead
@@ -28,6 +31,7 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
     { href: `${home}/catalogue`, label: 'Catalogue', count: count('confirmed') },
     ...(lead
       ? [
+          { href: `${home}/calibration`, label: 'Calibration' },
           { href: `${home}/people`, label: 'People' },
           { href: `${home}/settings`, label: 'Settings' },
         ]
