@@ -89,13 +89,16 @@ const SHEET = [
   'alter table membership add column passes integer not null default 0 check (passes in (0, 1))',
   // The newest mark of the first pass that a run read; 0 where the campaign used no sheet.
   'alter table run add column newest_sheet_mark_id integer not null default 0',
+  // A candidate lies on one sheet at a time, a calibration stamp on any number.
   `create table sheet_lease (
-    candidate_id integer primary key references candidate (id),
+    id integer primary key,
     campaign_id integer not null references campaign (id),
+    candidate_id integer not null references candidate (id),
     person_id integer not null references person (id),
-    until text not null
+    until text not null,
+    unique (candidate_id, person_id)
   ) strict`,
-  'create index sheet_lease_person on sheet_lease (campaign_id, person_id, candidate_id)',
+  'create index sheet_lease_person on sheet_lease (campaign_id, person_id, id)',
 ]
 
 export async function up(db: Kysely<unknown>): Promise<void> {

@@ -42,7 +42,7 @@ export interface JudgementShownTable {
   at: IsoTime
 }
 
-/** A mark of the first pass. The newest of a candidate holds; 'taken back' undoes the one before. */
+/** A mark of the first pass. A person's newest holds; 'taken back' leaves them without one. */
 export interface SheetMarkTable {
   id: Generated<number>
   uid: string
@@ -77,10 +77,11 @@ export interface RepeatLookTable {
   grade_id: number | null
 }
 
-/** Whose sheet a candidate of the first pass lies on. */
+/** Whose sheet a candidate of the first pass lies on: one person's, but for calibration stamps. */
 export interface SheetLeaseTable {
-  candidate_id: number
+  id: Generated<number>
   campaign_id: number
+  candidate_id: number
   person_id: number
   until: IsoTime
 }
