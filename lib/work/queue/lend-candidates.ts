@@ -11,6 +11,7 @@ import {
   type Asker,
   type QueuedCandidate,
 } from '@/db/queries/queue'
+import type { RepeatCandidate } from '@/db/queries/repeats'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
 import type { IsoTime } from '@/db/schema/values'
@@ -26,12 +27,14 @@ import { ratesIn } from './lens-estimate'
 import { kindOf, mix } from './mix'
 import { newestModel } from './model-of-run'
 import { orderSeed, personStream } from './person-stream'
+import { amongHeld, bringBack, repeatable } from './repeats'
 import { walkMarks, type WalkMarks } from './walk-marks'
 import { walkQueue } from './walk-queue'
 import { walkShuffled } from './walk-shuffled'
 
 export interface LentCandidates {
-  candidates: (QueuedCandidate | AskedCandidate)[]
+  /** Those that come back to the person say how they are turned. */
+  candidates: (QueuedCandidate | AskedCandidate | RepeatCandidate)[]
   /** When the leases run out, unless asked again before. */
   until: IsoTime
 }
@@ -63,39 +66,48 @@ export async function lendCandidates(
     await deleteExpiredLeases(transaction, campaign.id, now)
     const asked = await askedLooks(transaction, asker, wanted)
     const room = wanted - asked.length
-    const held = besides(asked, await listLentCandidates(transaction, asker, wanted)).slice(0, room)
+    const lent = await listLentCandidates(transaction, asker, wanted)
+    const held = besides(asked, await amongHeld(transaction, asker, lent)).slice(0, room)
     if (held.length > 0) {
       const ids = held.map(({ id }) => id)
       await setLeasesUntil(transaction, viewer.id, ids, until)
     }
     const more = room - held.length
     const next = more > 0 ? await listMixed(transaction, asker, plan, { asked, held: held.length, more }) : []
-    if (next.length > 0) {
-      const candidateIds = next.map(({ id }) => id)
+    const candidateIds = next.filter((one) => !('turned' in one)).map(({ id }) => id)
+    if (candidateIds.length > 0) {
       await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
     }
     return { candidates: [...asked, ...held, ...next], until }
   })
 }
 
-/** What is lent anew: what is wanted next, with calibration stamps among it at the places that are drawn for them. */
+/** What is lent anew: what is wanted next, with calibration stamps and own candidates among it at the places drawn for them. */
 async function listMixed(
   transaction: Kysely<DB>,
   asker: Asker,
   plan: QueuePlan,
   { asked, held, more }: { asked: readonly AskedCandidate[]; held: number; more: number },
-): Promise<QueuedCandidate[]> {
+): Promise<(QueuedCandidate | RepeatCandidate)[]> {
   const wanted = await listNext(transaction, asker, plan, more + asked.length)
   const ordinary = besides(asked, wanted).slice(0, more)
-  const { calibrationShare, stamps } = await findMix(transaction, asker.campaignId)
-  if (stamps === 0 || calibrationShare === 0 || ordinary.length === 0) return ordinary
+  const { stamps, calibrationShare, repeatShare } = await findMix(transaction, asker.campaignId)
+  if ((stamps === 0 || calibrationShare === 0) && repeatShare === 0) return ordinary
+  if (ordinary.length === 0) return []
+  const shares = { calibration: calibrationShare, repeat: repeatShare }
   const stream = await personStream(transaction, asker.campaignId, asker.personId)
   const drawAt = (place: number) => stream.at(place)
   const place = (await countLooks(transaction, asker.campaignId, asker.personId)) + held
-  const shares = { calibration: calibrationShare, repeat: 0 }
-  const wantsStamp = ordinary.some((_, k) => kindOf(drawAt(place + k), shares) === 'stamp')
-  const unseen = wantsStamp ? besides(asked, await listUnseenStamps(transaction, asker)) : []
-  return mix({ ordinary, stamps: unseen, repeats: [] }, drawAt, place, more, shares).map(({ item }) => item)
+  const kinds = Array.from({ length: more }, (_, k) => kindOf(drawAt(place + k), shares))
+  const unseen = kinds.includes('stamp') ? besides(asked, await listUnseenStamps(transaction, asker)) : []
+  const repeats = kinds.includes('repeat') ? besides(asked, await repeatable(transaction, asker)) : []
+  const queue = mix({ ordinary, stamps: unseen, repeats }, drawAt, place, more, shares)
+  const back = await bringBack(
+    transaction,
+    asker,
+    queue.flatMap(({ kind, item }, k) => (kind === 'repeat' ? { item, draw: drawAt(place + k) } : [])),
+  )
+  return queue.map(({ kind, item }) => (kind === 'repeat' ? back.find(({ id }) => id === item.id)! : item))
 }
 
 /** Those that a lead has reopened come before what the rule wants. */

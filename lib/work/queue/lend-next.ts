@@ -3,6 +3,7 @@ import type { Kysely } from 'kysely'
 import { hasImagedCandidate, type QueuedCandidate } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
+import { turnGeometry } from '@/lib/science/imaging/turn-geometry'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import type { AskedLook } from './asked-looks'
@@ -13,6 +14,11 @@ import { queueProgress, type QueueProgress } from './queue-progress'
 export interface BenchCandidate extends QueuedCandidate, CandidatePictures {
   /** A lead has asked this person by name for this look. */
   asked?: AskedLook
+  /**
+   * An own earlier candidate that comes back, to be shown turned: by quarters counter-clockwise, 0 to 3, mirrored left to right first
+   * from 4 on. Scale and compass are those of the picture as it is to be shown.
+   */
+  turned?: number
 }
 
 export interface LentQueue extends QueueProgress {
@@ -35,10 +41,16 @@ export async function lendNext(db: Kysely<DB>, permit: CampaignPermit<'grade'>, 
   return {
     candidates: lent.candidates.flatMap((candidate) => {
       const shown = pictures.get(candidate.id)
-      return shown ? [{ ...candidate, ...shown }] : []
+      if (!shown) return []
+      return [{ ...candidate, ...('turned' in candidate ? turnPictures(shown, candidate.turned) : shown) }]
     }),
     until: lent.until,
     imaged: await hasImagedCandidate(db, campaign.id),
     ...(await queueProgress(db, permit)),
   }
+}
+
+function turnPictures(pictures: CandidatePictures, turned: number): CandidatePictures {
+  const views = pictures.views.map((view) => ({ ...view, geometry: turnGeometry(view.geometry, turned) }))
+  return { ...pictures, views, geometry: turnGeometry(pictures.geometry, turned) }
 }

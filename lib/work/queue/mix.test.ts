@@ -4,7 +4,7 @@ import { recordGrade } from '@/lib/work/grading/record-grade'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { giveBack } from './give-back'
 import { lendNext } from './lend-next'
-import { kindOf, mix, stampsAhead } from './mix'
+import { kindOf, mix, mixedAhead } from './mix'
 import { PersonStream } from './person-stream'
 
 const SHARES = { calibration: 0.1, repeat: 0.05 }
@@ -71,7 +71,7 @@ describe('mixing', () => {
     const shares = { calibration: 0.1, repeat: 0 }
     const queue = mix(supplies, drawAt, 17, 1000, shares)
     const stamps = queue.filter(({ kind }) => kind === 'stamp').length
-    expect(stampsAhead(300, 20, drawAt, 17, shares)).toBe(stamps)
+    expect(mixedAhead({ ordinary: 300, stamps: 20, repeatsFrom: 20 }, drawAt, 17, shares)).toBe(stamps)
     expect(queue.length).toBe(300 + stamps)
   })
 })

@@ -56,21 +56,26 @@ export function mix<T>(
 const LOOKED_AT = 5000
 
 /**
- * How many stamps are still to come among this many ordinary candidates: exactly, so that what is left falls by one with each look,
- * whatever the look was at.
+ * How many stamps and repeats are still to come among the ordinary candidates that are left: place by place, so that what is left
+ * falls by one with each look, whatever the look was at. Repeats are taken to be there from a place on.
  */
-export function stampsAhead(
-  ordinary: number,
-  stamps: number,
+export function mixedAhead(
+  left: { ordinary: number; stamps: number; repeatsFrom: number },
   drawAt: (place: number) => PlaceDraw,
   place: number,
   shares: Shares,
 ): number {
-  let [left, ahead] = [ordinary, 0]
-  for (let k = 0; k < LOOKED_AT && left > 0 && ahead < stamps; k++) {
-    if (kindOf(drawAt(place + k), shares) === 'stamp') ahead++
-    else left--
+  let [ordinary, stamps, ahead] = [left.ordinary, left.stamps, 0]
+  for (let k = 0; k < LOOKED_AT && ordinary > 0; k++) {
+    const kind = kindOf(drawAt(place + k), shares)
+    if (kind === 'stamp' && stamps > 0) {
+      stamps--
+      ahead++
+    } else if (kind === 'repeat' && place + k >= left.repeatsFrom) ahead++
+    else ordinary--
   }
-  if (left === 0 || ahead === stamps) return ahead
-  return Math.min(stamps, ahead + Math.round((left * shares.calibration) / (1 - shares.calibration)))
+  const { calibration, repeat } = shares
+  const ordinaryShare = 1 - calibration - repeat
+  const expected = (share: number) => Math.round((ordinary * share) / ordinaryShare)
+  return ahead + Math.min(stamps, expected(calibration)) + expected(repeat)
 }

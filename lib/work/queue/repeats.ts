@@ -1,9 +1,11 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { countLooks, findMix } from '@/db/queries/mixing'
 import { insertRepeatLooks, listOpenRepeats, listRepeatable, type RepeatCandidate } from '@/db/queries/repeats'
 import type { QueuedCandidate } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
-import type { PlaceDraw } from './person-stream'
+import { kindOf } from './mix'
+import { personStream, type PlaceDraw } from './person-stream'
 
 /** So many looks lie between the first and the second at least: long enough that the first answer is not remembered (our choice). */
 export const LOOKS_BETWEEN = 20
@@ -38,15 +40,24 @@ export async function bringBack(
   return looks
 }
 
-/** What waits for an answer, put among what the person holds at a place that stays the same while it waits. */
+/** What waits for an answer, put among what the person holds at the places that were drawn for it, so that the order stays. */
 export async function amongHeld<T extends { id: number }>(
   db: Kysely<DB>,
   who: Who,
   held: readonly T[],
 ): Promise<(T | RepeatCandidate)[]> {
-  const together: (T | RepeatCandidate)[] = [...held]
-  for (const repeat of await listOpenRepeats(db, who)) {
-    together.splice(Math.min(together.length, 1 + (repeat.id % 3)), 0, repeat)
+  const repeats = await listOpenRepeats(db, who)
+  if (repeats.length === 0) return [...held]
+  const { calibrationShare, repeatShare } = await findMix(db, who.campaignId)
+  const shares = { calibration: calibrationShare, repeat: repeatShare }
+  const stream = await personStream(db, who.campaignId, who.personId)
+  const place = await countLooks(db, who.campaignId, who.personId)
+  const lent = [...held]
+  const together: (T | RepeatCandidate)[] = []
+  while (lent.length + repeats.length > 0) {
+    const isRepeat = kindOf(stream.at(place + together.length), shares) === 'repeat'
+    const from = (isRepeat || lent.length === 0) && repeats.length > 0 ? repeats : lent
+    together.push(from.shift()!)
   }
   return together
 }
