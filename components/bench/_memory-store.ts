@@ -6,6 +6,8 @@ export class MemoryStore implements Pick<Surroundings, 'store'> {
   readonly waiting = new Map<string, WaitingGrade>()
   readonly refused = new Map<string, RefusedGrade>()
   broken = false
+  /** How long writing takes, milliseconds. */
+  slowMs = 0
 
   readonly store: Surroundings['store'] = {
     grades: async () => {
@@ -14,6 +16,7 @@ export class MemoryStore implements Pick<Surroundings, 'store'> {
     },
     keepWaiting: async (grades) => {
       this.#check()
+      if (this.slowMs > 0) await new Promise((resolve) => setTimeout(resolve, this.slowMs))
       for (const grade of grades) this.waiting.set(grade.body.id, grade)
     },
     keepRefused: async (grades) => {

@@ -30,7 +30,7 @@ export function BenchHeader({
         <span className="hidden truncate text-small font-semibold lg:inline short:hidden">{campaignName}</span>
         <span className="whitespace-nowrap text-note text-mute">
           {/* Room for the whole count from the start, so that nothing moves at ten and at a hundred. */}
-          <span className="figures inline-block text-right" style={{ minWidth: `${all.length}ch` }}>
+          <span className="figures inline-block" style={{ minWidth: `${all.length}ch` }}>
             {counts.given.toLocaleString('en')}
           </span>{' '}
           of <span className="figures">{all}</span>

@@ -165,6 +165,19 @@ describe('two tabs of one person', () => {
     for (const { outbox } of [first, second]) expect(outbox.snapshot().waiting).toHaveLength(2)
   })
 
+  it('see it on a slow disk too', async () => {
+    const { disk, open } = browser()
+    disk.slowMs = 300
+    const troubles = Array.from({ length: 9 }, () => trouble)
+    const first = open([...troubles])
+    const second = open([...troubles])
+    first.outbox.add(waiting(1))
+    await vi.advanceTimersByTimeAsync(100)
+    expect(second.outbox.snapshot().waiting).toEqual([])
+    await vi.advanceTimersByTimeAsync(300)
+    expect(second.outbox.snapshot().waiting).toHaveLength(1)
+  })
+
   it('tell each other what they graded, so that neither grades it again unawares', async () => {
     const { open } = browser()
     const first = open()

@@ -49,7 +49,11 @@ export function firstsIn(waiting: readonly WaitingGrade[]): number {
 
 /** What tabs tell each other. */
 export type TabMessage =
-  { tell: 'gave'; grade: WaitingGrade } | { tell: 'settled'; id: string } | { tell: 'dismissed'; id: string }
+  | { tell: 'gave'; grade: WaitingGrade }
+  /** What was given can be read now. */
+  | { tell: 'kept' }
+  | { tell: 'settled'; id: string }
+  | { tell: 'dismissed'; id: string }
 
 export interface Surroundings {
   store: Pick<BenchStore, 'grades' | 'keepWaiting' | 'keepRefused' | 'forget'>
@@ -239,6 +243,7 @@ export class GradeOutbox {
   async #keep(grades: readonly WaitingGrade[]): Promise<void> {
     try {
       await this.#around.store.keepWaiting(grades)
+      this.#around.tell({ tell: 'kept' })
       if (!this.#snapshot.kept) this.#change({ kept: true })
     } catch {
       this.#change({ kept: false })

@@ -28,8 +28,10 @@ export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: s
     return () => clearTimeout(timer)
   }, [sentence, trouble])
   return (
-    <div className="min-w-0 text-note">
+    <div className="min-w-0 text-note md:min-h-[3.75rem] short:min-h-0">
+      {/* Another sentence is another paragraph: it does not move, it is replaced. */}
       <p
+        key={sentence}
         data-save-line
         title={sentence}
         className={`${trouble?.signIn ? 'max-md:line-clamp-1' : 'max-md:line-clamp-2'} ${

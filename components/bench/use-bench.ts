@@ -70,7 +70,15 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     },
     opened: () => void recall.current?.(),
   })
-  useSupply({ slug, personId, session, dispatch, outbox: latest })
+  useSupply({
+    slug,
+    personId,
+    session,
+    dispatch,
+    outbox: latest,
+    // Grades that wait for the server need not wait out their pause.
+    onReached: () => latest().trouble && outbox?.flush(),
+  })
   const recallSitting = useSitting({ slug, personId, session, dispatch, outbox: latest, onHint: setHint })
   useEffect(() => {
     recall.current = recallSitting

@@ -23,13 +23,15 @@ interface Around {
   session: BenchSession
   dispatch: Dispatch<BenchAction>
   outbox: () => OutboxSnapshot
+  /** The server has answered. */
+  onReached: () => void
 }
 
 /**
  * Keeps candidates coming: refills, renews the leases while somebody works here, looks again when everything left is with
  * others, and gives back what was not graded on leaving.
  */
-export function useSupply({ slug, personId, session, dispatch, outbox }: Around): void {
+export function useSupply({ slug, personId, session, dispatch, outbox, onReached }: Around): void {
   const { upcoming, counts, supply } = session
   const { target, low } = supplyDepth(session.given)
   const asking = useRef(false)
@@ -43,6 +45,7 @@ export function useSupply({ slug, personId, session, dispatch, outbox }: Around)
     dispatch({ type: 'asked' })
     try {
       const supplied = await askQueue({ slug, personId }, wanted)
+      onReached()
       const { waiting } = outbox()
       dispatch({
         type: 'supplied',

@@ -153,7 +153,8 @@ describe('two tabs of one person', () => {
     await second.getByText(`You gave ${name} its C in another tab.`).waitFor()
     expect(await headingOf(second)).not.toBe(name)
     for (const tab of [first, second]) {
-      await expect.poll(() => tab.locator('[data-save-line]').first().textContent()).toMatch(/^1 waiting/)
+      const line = () => tab.locator('[data-save-line]').first().textContent()
+      await expect.poll(line, { timeout: 10_000 }).toMatch(/^1 waiting/)
     }
     await context.unroute('**/grade')
     for (const tab of [first, second]) {
