@@ -6,6 +6,7 @@ import type { GradeLetter } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
 import { toJson, type IsoTime, type Json } from '../schema/values'
 import { inCampaign } from './by-ids'
+import { newestMarkId } from './sheet'
 
 /**
  * The answers that count for a verdict: of each person and candidate the newest standing one, given first or asked for.
@@ -165,6 +166,8 @@ export interface RunBounds {
   newestGradeId: number
   newestCandidateId: number
   newestLeftOutId: number
+  /** Of the first pass; 0 where the campaign uses no sheet. */
+  newestSheetMarkId?: number
 }
 
 export async function newestInput(db: Kysely<DB>, campaignId: number): Promise<RunBounds> {
@@ -186,6 +189,7 @@ export async function newestInput(db: Kysely<DB>, campaignId: number): Promise<R
     newestGradeId: grade?.id ?? 0,
     newestCandidateId: candidate?.id ?? 0,
     newestLeftOutId: leftOut?.id ?? 0,
+    newestSheetMarkId: await newestMarkId(db, campaignId),
   }
 }
 
@@ -317,6 +321,7 @@ export async function insertRun(
     newestGradeId: number
     newestCandidateId: number
     newestLeftOutId?: number
+    newestSheetMarkId?: number
     summary: RunSummary
     model?: RunModel | null
     startedBy: number | null
@@ -332,6 +337,7 @@ export async function insertRun(
       newest_grade_id: run.newestGradeId,
       newest_candidate_id: run.newestCandidateId,
       newest_left_out_id: run.newestLeftOutId ?? 0,
+      newest_sheet_mark_id: run.newestSheetMarkId ?? 0,
       summary: toJson(run.summary),
       model: run.model ? toJson(run.model) : null,
       started_by: run.startedBy,

@@ -10,6 +10,7 @@ import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
 import { benchPage } from './bench-page'
+import { benchQueue } from './bench-queue'
 import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
@@ -22,6 +23,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   lens: benchLens,
   consensus: benchConsensus,
   'bench-page': benchPage,
+  queue: benchQueue,
 }
 
 process.env.RINGSIDE_PEERS ??= 'fixtures/peers'

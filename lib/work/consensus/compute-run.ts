@@ -19,6 +19,7 @@ import type { Judge } from './judge'
 import { judgeByMean } from './judge-by-mean'
 import { judgeByReliability } from './judge-by-reliability'
 import { measureAgreement } from './measure-agreement'
+import { judgeByPass, readNotSentOn } from './not-sent-on'
 import { PAGE, readGrades, type RunGrades } from './read-grades'
 
 export interface RunInput extends RunBounds {
@@ -53,7 +54,7 @@ export async function computeRun(db: Kysely<DB>, input: RunInput): Promise<Compu
 /** Reads what the run judges. Two queries a page. */
 export async function readRun(db: Kysely<DB>, input: RunInput): Promise<ReadRun> {
   const leftOut = await listLeftOutPeople(db, input.campaignId, input.newestLeftOutId)
-  const digest = new InputDigest(input.rule, leftOut)
+  const digest = new InputDigest(input.rule, leftOut, input.newestSheetMarkId)
   const withCalibration = input.rule.method === 'reliability'
   const grades = await readGrades(db, input, { leftOut: new Set(leftOut), withCalibration, digest })
   return { inputDigest: digest.hex(), grades, leftOut }
@@ -80,18 +81,22 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
     const last = page.at(-1)
     if (!last) break
     after = last.id
+    const notSentOn = await readNotSentOn(db, input, { from: page[0].id, to: last.id })
     for (const candidate of page) {
       while (row < ids.length && ids[row] < candidate.id) row += 1
       if (ids[row] !== candidate.id || truth[row] !== UNKNOWN_TRUTH) continue
-      const { judgement, reason, differs } = judge(row)
+      const judged = judge(row)
+      const reasonOfPass = notSentOn.get(candidate.id)
+      const unseen = judged.judgement.grades + judged.judgement.cannotJudge === 0
+      const { judgement, reason, differs } = reasonOfPass && unseen ? judgeByPass(judged, reasonOfPass) : judged
       counts.push(countPoints(table.cell.subarray(table.start[row], table.start[row + 1])))
       outcomes[judgement.outcome] += 1
       totals.candidates += 1
       totals.grades += judgement.grades
       totals.cannotJudge += judgement.cannotJudge
-      // Nothing is said of a candidate that nobody has looked at, unless something was said before.
+      // Nothing is said of a candidate that nobody has looked at, unless the first pass or a verdict before said something.
       const looks = judgement.grades + judgement.cannotJudge
-      if ((looks > 0 || candidate.outcome !== null) && differs(candidate)) {
+      if ((looks > 0 || judgement.outcome !== 'open' || candidate.outcome !== null) && differs(candidate)) {
         changed.push({
           candidateId: candidate.id,
           ...judgement,

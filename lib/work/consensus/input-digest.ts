@@ -16,13 +16,23 @@ import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
  *   left out <person id> …                           ascending; nothing after the words where nobody is
  *   <candidate id> lens | not a lens                 for every calibration stamp with an answer, before these
  *
+ * Where the campaign makes a first pass over the sheet, one line is between these and the answers; marks only grow, so that the newest
+ * says which were read:
+ *
+ *   first pass <id of the newest mark>
+ *
  * Numbers are written as JSON writes them. Repeats and answers of people who are left out are not in it, nor is an answer that was
  * corrected, so that a grade changed and changed back gives the same digest.
  */
 export class InputDigest {
   readonly #hash: Hash = createHash('sha256')
 
-  constructor(rule: RuleInForce, leftOut: readonly number[]) {
+  constructor(rule: RuleInForce, leftOut: readonly number[], newestSheetMarkId = 0) {
+    this.#open(rule, leftOut)
+    if (newestSheetMarkId > 0) this.#hash.update(`first pass ${newestSheetMarkId}\n`)
+  }
+
+  #open(rule: RuleInForce, leftOut: readonly number[]): void {
     const numbers = (values: readonly number[]) => values.map((n) => JSON.stringify(n)).join(' ')
     if (rule.method === 'mean') {
       const { gradesWanted, leastGrades, confirmMean, setAsideMean, splitSpread } = rule
