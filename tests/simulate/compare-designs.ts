@@ -4,7 +4,7 @@
  *
  * Both designs are set with the truth at hand: the cut is the best there is, and the two error rates of the product's rule are
  * those whose boundaries reach that catalogue, found on the simulation without a database (compare-looks.ts) and moved after each
- * pass through the product by what was lacking. Reliabilities and share of lenses are learned, never given.
+ * pass through the product by what was lacking or to spare. Reliabilities and share of lenses are learned, never given.
  */
 import { compareLooks, isAsGood, moveGoal, waldNumber } from '@/lib/science/agreement/compare-looks'
 import { boundariesReaching, lookSteps } from '@/lib/science/agreement/sample-number'
@@ -37,7 +37,7 @@ export interface DesignComparison {
 }
 
 export interface CompareOptions {
-  /** passes through the product at most; the first whose catalogue matches is reported, and none after it is made */
+  /** passes through the product at most; of those whose catalogue matches, the one with the fewest looks is reported */
   passes: number
   leastGrades: number
   onPass?: (pass: number, played: PlayedSearch, isMatched: boolean) => void
@@ -49,10 +49,16 @@ export function ratesOfBoundaries({ upper, lower }: Boundaries): ErrorRates {
   return { falseConfirmed: (1 - b) / (a - b), missedLens: (b * (a - 1)) / (a - b) }
 }
 
-/** A goal that was reached stays: the first catalogue that matches is taken. */
-function raised(goal: number, wanted: number, reached: number): number {
-  return reached < wanted ? moveGoal(goal, wanted, reached) : goal
-}
+/** Completeness and purity above what is wanted, together, below which another pass is not worth its time. */
+const LITTLE_TO_SPARE = 0.015
+
+type Pass = Pick<DesignComparison, 'product' | 'rule' | 'isMatched'>
+
+/** A catalogue that matches before one that does not, then fewer looks. */
+const isBetter = (pass: Pass, than: Pass): boolean =>
+  pass.isMatched === than.isMatched
+    ? pass.product.looksPerCandidate < than.product.looksPerCandidate || !pass.isMatched
+    : pass.isMatched
 
 export async function compareDesigns(scenario: SearchScenario, options: CompareOptions): Promise<DesignComparison> {
   const search = simulateSearch(scenario)
@@ -61,7 +67,7 @@ export async function compareDesigns(scenario: SearchScenario, options: CompareO
   const pure = compareLooks(scenario)
   const limits = { leastLooks: options.leastGrades, mostLooks: scenario.graders }
   let goal = pure.goal
-  let best: { product: PlayedSearch; rule: ErrorRates; isMatched: boolean } | null = null
+  let best: Pass | null = null
   let passes = 0
   while (passes < options.passes) {
     passes += 1
@@ -78,11 +84,14 @@ export async function compareDesigns(scenario: SearchScenario, options: CompareO
     )
     const isMatched = isAsGood(product, wanted)
     options.onPass?.(passes, product, isMatched)
-    best = { product, rule, isMatched }
-    if (isMatched) break
+    const pass = { product, rule, isMatched }
+    if (best === null || isBetter(pass, best)) best = pass
+    const purity = product.purity ?? 0
+    const toSpare = product.completeness - wanted.completeness + purity - wanted.purity
+    if (isMatched && toSpare < LITTLE_TO_SPARE) break
     goal = {
-      completeness: raised(goal.completeness, wanted.completeness, product.completeness),
-      purity: raised(goal.purity, wanted.purity, product.purity ?? 0),
+      completeness: moveGoal(goal.completeness, wanted.completeness, product.completeness),
+      purity: moveGoal(goal.purity, wanted.purity, purity),
     }
   }
   if (!best) throw new RangeError('There must be one pass or more.')
