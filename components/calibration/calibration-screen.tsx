@@ -82,9 +82,9 @@ export function CalibrationScreen({
       <PaintingWork page={page} />
       <FormSection
         title="Galaxies"
-        about="Real galaxies of this campaign that are no lenses. Each is used once, turned or mirrored, so that nobody knows it again. What you leave unpainted serves as a known non-lens, on your word."
+        about="Real galaxies of this campaign that are no lenses. Each is used once, turned or mirrored, so that nobody knows it again. Lens galaxies are mostly smooth and red: those look most natural painted over. What stays unpainted serves as a known non-lens, on your word."
       >
-        <GalaxyChooser slug={slug} first={first} chosen={chosen} onChoose={setChosen} />
+        <GalaxyChooser slug={slug} first={first} made={all} chosen={chosen} onChoose={setChosen} />
       </FormSection>
       <FormSection
         title="Lenses to paint"
@@ -116,7 +116,7 @@ export function CalibrationScreen({
       </FormSection>
       <FormSection
         title="Make them"
-        about="In the background. They get names like the survey’s own, positions nearby, and pictures by the recipe in force."
+        about="In the background. They get names like the survey’s own, positions nearby, and pictures by the recipe in force. Which of the chosen are painted is drawn by lot; for smooth galaxies with lenses and look-alikes without, make them in two goes."
       >
         <div className="flex flex-wrap items-start gap-4">
           <div className="w-40">

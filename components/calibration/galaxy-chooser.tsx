@@ -1,6 +1,6 @@
 'use client'
 
-import { useState } from 'react'
+import { useEffect, useEffectEvent, useRef, useState } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { Button } from '@/components/ui/button'
 import { StampFigure } from '@/components/ui/stamp-figure'
@@ -14,11 +14,14 @@ const NAMES: Record<GalaxyFilter, string> = { 'set aside': 'Set aside', 'graded 
 export function GalaxyChooser({
   slug,
   first,
+  made,
   chosen,
   onChoose,
 }: {
   slug: string
   first: { which: GalaxyFilter; galaxies: Galaxy[] }
+  /** Stamps that there are: each takes its galaxy off the list. */
+  made: number
   chosen: ReadonlySet<number>
   onChoose: (ids: ReadonlySet<number>) => void
 }) {
@@ -33,6 +36,13 @@ export function GalaxyChooser({
       setTrouble(error instanceof Error ? error.message : String(error))
     }
   }
+  const lookAgain = useEffectEvent(() => void look(which, name))
+  const before = useRef(made)
+  useEffect(() => {
+    if (made === before.current) return
+    before.current = made
+    lookAgain()
+  }, [made])
   const toggle = (id: number) => {
     const next = new Set(chosen)
     if (!next.delete(id)) next.add(id)

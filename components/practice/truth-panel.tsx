@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'react'
+import { counted } from '@/components/campaigns/in-words'
 import { Button } from '@/components/ui/button'
 import { StampFigure } from '@/components/ui/stamp-figure'
 import type { Confusion } from '@/lib/work/calibration/confusion'
@@ -64,7 +65,11 @@ export function TruthPanel({
   const next = useRef<HTMLButtonElement>(null)
   // Enter goes on, and a screen reader is taken to what there is to know.
   useEffect(() => next.current?.focus({ preventScroll: true }), [])
-  const judged = own.lensesSeen.of + own.othersSeen.of
+  const { lensesSeen, othersSeen } = own
+  const soFar = [
+    ...(lensesSeen.of > 0 ? [`${lensesSeen.n} of ${counted(lensesSeen.of, 'lens', 'lenses')} seen`] : []),
+    ...(othersSeen.of > 0 ? [`${othersSeen.n} of ${counted(othersSeen.of, 'non-lens', 'non-lenses')} graded N`] : []),
+  ]
   return (
     <section aria-labelledby="practice-truth" className="flex flex-col gap-2 md:gap-3">
       <h2 id="practice-truth" className="text-title font-semibold">
@@ -79,9 +84,7 @@ export function TruthPanel({
       </Button>
       <p className="text-note text-mute max-md:hidden">
         Enter goes on.
-        {judged > 0
-          ? ` Before this one: ${own.lensesSeen.n} of ${own.lensesSeen.of} lenses seen, ${own.othersSeen.n} of ${own.othersSeen.of} non-lenses known for what they are.`
-          : ''}
+        {soFar.length > 0 ? ` Before this one: ${soFar.join(', ')}.` : ''}
       </p>
     </section>
   )

@@ -71,6 +71,6 @@ export async function previewPainting(
 }
 
 const shownViews = ({ views }: Recipe): Recipe['views'] => {
-  const known = views.filter((key) => SHOWN.includes(key))
+  const known = SHOWN.filter((key) => views.includes(key))
   return known.length > 0 ? known : views.slice(0, 2)
 }

@@ -166,6 +166,10 @@ describe('the galaxy that is painted over', () => {
     expect(() => measureGalaxy(planes)).toThrow('no galaxy in the middle')
   })
 
+  it('is refused where it is a bright star, whose middle is saturated', () => {
+    expect(() => measureGalaxy(galaxyPlanes(3, 'star-spikes'))).toThrow('saturated')
+  })
+
   it('is refused without a scale, and in a cutout too small for the lens', () => {
     const planes = galaxyPlanes(2)
     expect(() => measureGalaxy(planes.map((plane) => ({ ...plane, wcs: null, pixelScaleArcsec: null })))).toThrow(

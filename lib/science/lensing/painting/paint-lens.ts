@@ -80,9 +80,15 @@ export interface GalaxyToPaint extends MeasuredEllipse {
 /** Einstein radii up to this share of the shorter side stay in the picture with their images. */
 const MOST_SHARE = 0.32
 
-/** @throws PaintingError where there is no galaxy to be measured or the scale of the picture is not known. */
+/** @throws PaintingError where there is no galaxy to be measured, its core is saturated, or the scale of the picture is not known. */
 export function measureGalaxy(planes: readonly PlaneToPaint[]): GalaxyToPaint {
-  const { model } = subtractLensLight(planes.map(({ band, width, height, data }) => ({ band, width, height, data })))
+  const bands = planes.map(({ band, width, height, data }) => ({ band, width, height, data }))
+  const { model, residuals } = subtractLensLight(bands)
+  // Where a core is saturated nothing is left of it.
+  const lost = residuals.some(({ data }, k) =>
+    data.some((value, i) => value !== value && Number.isFinite(bands[k].data[i])),
+  )
+  if (lost) throw new PaintingError('Its middle is saturated, as of a bright star.')
   const measured = model && planes.find(({ band }) => band in model.light)
   if (!measured) throw new PaintingError('There is no galaxy in the middle that is bright enough to be measured.')
   const grid = gridOf(measured, model.x, model.y)
