@@ -4,7 +4,7 @@ import type { Rule } from '../schema/campaigns'
 import type { Run, RunModel, RunSummary } from '../schema/consensus'
 import type { GradeLetter } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
-import { toJson, type IsoTime, type Json } from '../schema/values'
+import { toJson, type IsoTime } from '../schema/values'
 import { inCampaign } from './by-ids'
 import { newestMarkId } from './sheet'
 
@@ -13,7 +13,7 @@ import { newestMarkId } from './sheet'
  * Repeats measure a grader's constancy and decide nothing. A correction is always newer than what it corrects, so the newest
  * row is a standing one. With `upTo` they are the answers as they stood when that row was the newest grade: grades only grow.
  */
-function countedAnswers(db: Kysely<DB>, upTo?: number) {
+export function countedAnswers(db: Kysely<DB>, upTo?: number) {
   const base = db
     .selectFrom('grade')
     .where('grade.occasion', 'in', ['first', 'asked'])
@@ -70,95 +70,6 @@ export async function countVotes(
     votes.set(row.candidateId, counts)
   }
   return votes
-}
-
-export interface EvidenceAnswer {
-  id: number
-  personId: number
-  name: string
-  /** null for a person who is no member and never was. */
-  pseudonym: string | null
-  grade: GradeLetter
-  occasion: 'first' | 'repeat' | 'asked'
-  tags: Json<string[]>
-  remark: string | null
-  seconds: number | null
-  givenAt: IsoTime
-}
-
-/** The counted answers of one candidate with who gave them, in order of their ids; as they stood at the grade `upTo`, or now. */
-export async function listAnswersOf(db: Kysely<DB>, candidateId: number, upTo?: number): Promise<EvidenceAnswer[]> {
-  return countedAnswers(db, upTo)
-    .innerJoin('person', 'person.id', 'grade.person_id')
-    .leftJoin('membership', (join) =>
-      join
-        .onRef('membership.person_id', '=', 'grade.person_id')
-        .onRef('membership.campaign_id', '=', 'grade.campaign_id'),
-    )
-    .select([
-      'grade.id',
-      'grade.person_id as personId',
-      'person.name',
-      'membership.pseudonym',
-      'grade.grade',
-      'grade.occasion',
-      'grade.tags',
-      'grade.remark',
-      'grade.seconds',
-      'grade.given_at as givenAt',
-    ])
-    .where('grade.candidate_id', '=', candidateId)
-    .orderBy('grade.id')
-    .execute()
-}
-
-export interface VerdictWithRule {
-  id: number
-  outcome: CandidateState
-  grades: number
-  cannotJudge: number
-  mean: number | null
-  spread: number | null
-  /** of a lens, by the reliability method */
-  probability: number | null
-  reason: string
-  at: IsoTime
-  rule: Rule
-}
-
-/** Every verdict of a candidate with the rule it came from, oldest first. */
-export async function listVerdictsOf(db: Kysely<DB>, candidateId: number): Promise<VerdictWithRule[]> {
-  const rows = await db
-    .selectFrom('verdict')
-    .innerJoin('run', 'run.id', 'verdict.run_id')
-    .innerJoin('rule', 'rule.id', 'run.rule_id')
-    .selectAll('rule')
-    .select([
-      'verdict.id as verdictId',
-      'verdict.outcome',
-      'verdict.grades',
-      'verdict.cannot_judge as cannotJudge',
-      'verdict.mean',
-      'verdict.spread',
-      'verdict.probability',
-      'verdict.reason',
-      'run.created_at as at',
-    ])
-    .where('verdict.candidate_id', '=', candidateId)
-    .orderBy('verdict.id')
-    .execute()
-  return rows.map(({ verdictId, outcome, grades, cannotJudge, mean, spread, probability, reason, at, ...rule }) => ({
-    id: verdictId,
-    outcome,
-    grades,
-    cannotJudge,
-    mean,
-    spread,
-    probability,
-    reason,
-    at,
-    rule,
-  }))
 }
 
 /** The newest rows of a moment: together with a rule they fix what a run reads. */

@@ -1,7 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { findCandidate, findDesignation, listFilesOf } from '@/db/queries/candidates'
-import { listAnswersOf, listVerdictsOf, type EvidenceAnswer } from '@/db/queries/consensus'
+import { listAnswersOf, listVerdictsOf, type EvidenceAnswer } from '@/db/queries/verdicts'
 import { listRulingsOf, listStateChanges } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { RulingOutcome } from '@/db/schema/consensus'

@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listAnswersOf } from '@/db/queries/consensus'
+import { listAnswersOf } from '@/db/queries/verdicts'
 import { findEstimateOf, findRunOfVerdict } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { RunModel } from '@/db/schema/consensus'
