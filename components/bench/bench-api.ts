@@ -16,6 +16,8 @@ export interface GradeBody {
   reason: string | null
   /** The answer to a look that was asked for by name. */
   asked?: true
+  /** The answer to a candidate that came back, with the turn that it was shown in. */
+  turned?: number
   /** Version of the recipe of the pictures that were judged. */
   recipe?: number | null
 }

@@ -242,11 +242,13 @@ function drafted(session: BenchSession, change: (draft: Draft) => Draft): BenchS
 function refilled(session: BenchSession, action: BenchAction & { type: 'supplied' }): BenchSession {
   const { supplied, waiting, resumed } = action
   const onTheirWay = new Set(waiting.candidateIds)
-  const handled = new Map(session.given.map(({ candidate }) => [candidate.id, candidate.asked?.id]))
-  // A look that is asked for anew comes again, although the candidate was graded in this sitting.
-  const offered = supplied.candidates.filter(
-    ({ id, asked }) => !onTheirWay.has(id) && (!handled.has(id) || (asked && asked.id !== handled.get(id))),
-  )
+  const handled = new Map(session.given.map(({ candidate }) => [candidate.id, candidate]))
+  // A look that is asked for anew comes again, and a candidate that comes back turned, although graded in this sitting.
+  const offered = supplied.candidates.filter(({ id, asked, turned }) => {
+    const before = handled.get(id)
+    if (onTheirWay.has(id)) return false
+    return !before || (asked && asked.id !== before.asked?.id) || (turned !== undefined && turned !== before.turned)
+  })
   const stillOffered = new Set(offered.map(({ id }) => id))
   const kept = session.upcoming.filter(({ id }, index) => stillOffered.has(id) || (index === 0 && !resumed))
   const known = new Set(kept.map(({ id }) => id))

@@ -104,7 +104,12 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                     onBlink={bench.setBlinking}
                     onSweep={(step) => run({ do: 'next view', step })}
                   />
-                  <SlideStrip views={look.candidate.views} shown={bench.shownView} onChoose={bench.chooseView} />
+                  <SlideStrip
+                    views={look.candidate.views}
+                    shown={bench.shownView}
+                    turned={look.candidate.turned}
+                    onChoose={bench.chooseView}
+                  />
                 </div>
               </>
             ) : (

@@ -28,7 +28,7 @@ export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: s
     return () => clearTimeout(timer)
   }, [sentence, trouble])
   return (
-    <div className="min-w-0 text-note md:min-h-[3.75rem] short:min-h-0">
+    <div className="flex min-h-10 min-w-0 grow flex-col justify-center text-right text-note md:min-h-[3.75rem] md:grow-0 md:justify-start md:text-left short:min-h-0">
       {/* Another sentence is another paragraph: it does not move, it is replaced. */}
       <p
         key={sentence}

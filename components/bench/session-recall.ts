@@ -31,7 +31,8 @@ export function givenElsewhere(
  */
 export function recalled(session: BenchSession, looks: readonly Look[], drafts: Record<number, Draft>): BenchSession {
   const here = new Set([...session.given, ...session.upcoming.map((candidate) => ({ candidate }))].map(idOf))
-  const earlier = looks.filter((look) => !here.has(idOf(look)))
+  // What came back turned is not looked back at after a reload: the first grade would be told beside it.
+  const earlier = looks.filter((look) => !here.has(idOf(look)) && !look.candidate.turned)
   return {
     ...session,
     given: [...earlier, ...session.given],

@@ -1,3 +1,4 @@
+import { turnedStyle } from '@/components/light/turned'
 import { KeyCap } from '@/components/ui/key-cap'
 import type { PictureView } from '@/lib/work/stamps/candidate-pictures'
 import { letGo } from './let-go'
@@ -6,10 +7,12 @@ import { letGo } from './let-go'
 export function SlideStrip({
   views,
   shown,
+  turned,
   onChoose,
 }: {
   views: readonly PictureView[]
   shown: string | null
+  turned?: number
   onChoose: (key: string) => void
 }) {
   return (
@@ -37,6 +40,7 @@ export function SlideStrip({
                 height={height}
                 draggable={false}
                 className="pixelated size-full object-contain"
+                style={turnedStyle(turned)}
               />
             ) : (
               <span className="grid size-full place-items-center text-[0.6875rem] text-tray-text">none</span>

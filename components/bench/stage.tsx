@@ -74,6 +74,7 @@ export function Stage({
             geometry={view?.geometry ?? null}
             closeFieldArcsec={candidate.closeFieldArcsec}
             scrolls={false}
+            turned={candidate.turned}
           >
             {candidate.views.map(({ key, label, url, width, height }) =>
               url ? (

@@ -115,6 +115,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
         reason,
         recipe: candidate.recipe,
         ...(candidate.asked ? { asked: true as const } : {}),
+        ...(candidate.turned ? { turned: candidate.turned } : {}),
       },
     })
   }

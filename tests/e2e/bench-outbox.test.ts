@@ -39,8 +39,8 @@ async function openBench(): Promise<void> {
   errors = collectErrors(page)
   // The browser notes 250 unless told otherwise.
   await page.addInitScript(() => performance.setResourceTimingBufferSize(10_000))
-  await page.goto(`${server.url}${BENCH}`)
-  await page.waitForFunction(() => document.querySelector('[data-save-line]') !== null)
+  // Keys are heard once the page's script runs.
+  await page.goto(`${server.url}${BENCH}`, { waitUntil: 'networkidle' })
   await expect.poll(heading, { timeout: 20_000 }).toMatch(/^SWS\d{5}$/)
 }
 
@@ -178,8 +178,8 @@ describe('a session that has run out', () => {
     await page.waitForLoadState('networkidle')
     await fillSignIn(page)
     await page.waitForURL(`**${BENCH}`)
+    const grades = async () => (await gradesInDatabase()).filter((grade) => grade.name === name)
+    await expect.poll(grades, { timeout: 30_000 }).toMatchObject([{ grade: 'B', replaces: null }])
     await expect.poll(saveLine, { timeout: 30_000 }).toBe('All grades saved')
-    const grades = (await gradesInDatabase()).filter((grade) => grade.name === name)
-    expect(grades).toMatchObject([{ grade: 'B', replaces: null }])
   })
 })

@@ -1,0 +1,67 @@
+import { describe, expect, it } from 'vitest'
+import { turnedStyle } from '@/components/light/turned'
+import { benchCandidate, supply } from './_candidates'
+import { freshRoom, grades, look, name, open, pause, room } from './_bench-room'
+import { openSession, reduceSession, type Supplied } from './bench-session'
+
+freshRoom()
+
+const turnedQueue = (turned: number): Supplied => ({
+  ...supply([1, 2]),
+  candidates: [{ ...benchCandidate(1), turned }, benchCandidate(2)],
+})
+
+describe('a candidate that comes back', () => {
+  it('is shown turned in every view, in the strip too, and answered as what it is', async () => {
+    room.queue = turnedQueue(5)
+    const { user } = await open()
+    const large = document.querySelector<HTMLElement>('figure img')?.parentElement
+    expect(large?.style.transform).toBe('rotate(-90deg) scaleX(-1)')
+    const slides = [...document.querySelectorAll<HTMLElement>('[aria-label="Views"] img')]
+    expect(slides.length).toBe(3)
+    for (const slide of slides) expect(slide.style.transform).toBe('rotate(-90deg) scaleX(-1)')
+    await user.keyboard('b')
+    await pause(50)
+    expect(grades()[0].body).toMatchObject({ grade: 'B', turned: 5 })
+    await look()
+    expect(name()).toBe('SWS-2')
+    expect(document.querySelector<HTMLElement>('figure img')?.parentElement?.style.transform).toBe('')
+    await user.keyboard('n')
+    await pause(50)
+    expect(grades()[1].body).not.toHaveProperty('turned')
+  })
+
+  it('comes again although it was graded in this sitting, and once', () => {
+    const answer = { grade: 'A' as const, tags: [], remark: '', reason: null }
+    const graded = (session: ReturnType<typeof openSession>) =>
+      reduceSession(session, { type: 'graded', answer, view: null, seconds: 1, at: 0 })
+    const supplied = (session: ReturnType<typeof openSession>, offered: Supplied) =>
+      reduceSession(session, {
+        type: 'supplied',
+        supplied: offered,
+        asked: 5,
+        waiting: { candidateIds: [], firsts: 0 },
+        resumed: false,
+      })
+    let session = graded(openSession(supply([1])))
+    session = supplied(session, supply([1]))
+    expect(session.upcoming).toEqual([])
+    session = supplied(session, turnedQueue(3))
+    expect(session.upcoming.map(({ id, turned }) => [id, turned])).toEqual([
+      [1, 3],
+      [2, undefined],
+    ])
+    session = supplied(graded(session), turnedQueue(3))
+    expect(session.upcoming.map(({ id }) => id)).toEqual([2])
+  })
+})
+
+it.each([
+  [undefined, undefined],
+  [1, 'rotate(-90deg)'],
+  [2, 'rotate(-180deg)'],
+  [4, 'scaleX(-1)'],
+  [7, 'rotate(-270deg) scaleX(-1)'],
+])('turn %s is drawn by %s', (turned, transform) => {
+  expect(turnedStyle(turned)?.transform).toBe(transform)
+})
