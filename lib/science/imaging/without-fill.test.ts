@@ -1,5 +1,7 @@
+import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
+import { readFits } from '@/lib/science/fits/read-fits'
 import { withoutFill } from './without-fill'
 
 const WIDTH = 40
@@ -27,6 +29,11 @@ describe('pixels that a pipeline has filled with one number', () => {
     cleared.forEach((own, i) => expect(own).toBe(i % WIDTH < 12 ? Number.NaN : data[i]))
   })
 
+  it('become no data where there are two such numbers', () => {
+    const data = fill(fill(sky(), 0, 12, HEIGHT), 3, 12, 10)
+    expect(missing(withoutFill(data, WIDTH, HEIGHT))).toBe(12 * HEIGHT)
+  })
+
   it('stay where they make no square of five, as single dead rows and pixels', () => {
     const data = fill(sky(), 0, WIDTH, 4)
     expect(withoutFill(data, WIDTH, HEIGHT)).toBe(data)
@@ -48,4 +55,22 @@ describe('pixels that a pipeline has filled with one number', () => {
     const half = data.map((_, i) => (i < 600 ? Number.NaN : 7))
     expect(withoutFill(half, WIDTH, HEIGHT)).toBe(half)
   })
+
+  it('are told from the flat blocks that lossy compression leaves in true sky', async () => {
+    const data = await compressed('hcompress_flat_blocks')
+    expect(missing(withoutFill(data, 80, 80))).toBe(0)
+  })
+
+  it('are found beside such blocks where they are far darker than the sky, and nothing else is', async () => {
+    const data = await compressed('hcompress_flat_blocks_filled')
+    const cleared = withoutFill(data, 80, 80)
+    expect(missing(cleared)).toBeGreaterThan(0.5 * 14 * 80)
+    cleared.forEach((own, i) => expect(own).toBe(own !== own && i % 80 < 14 ? Number.NaN : data[i]))
+  })
 })
+
+/** Made by astropy: fixtures/fits/README.md. */
+async function compressed(name: string): Promise<Float32Array> {
+  const { images } = await readFits(readFileSync(`fixtures/fits/extra/${name}.fits.fz`))
+  return images[0].planes[0]
+}
