@@ -17,6 +17,8 @@ interface Props {
   stamps: TrayStamp[]
   /** what the Agreement page has to say; comes later than the rest */
   agreementLine?: ReactNode
+  /** how far the first pass is, where there is one */
+  firstPass?: ReactNode
 }
 
 function headline({ outcome, candidates }: CampaignOverview): string {
@@ -27,7 +29,7 @@ function headline({ outcome, candidates }: CampaignOverview): string {
   return `${counted(candidates, 'candidate')}: ${confirmed.toLocaleString('en')} confirmed${rest}`
 }
 
-function Outcome({ overview, campaignPath, stamps, agreementLine }: Props) {
+function Outcome({ overview, campaignPath, stamps, agreementLine, firstPass }: Props) {
   const { outcome } = overview
   if (!outcome) return null
   const { split, open } = outcome.counts
@@ -37,6 +39,7 @@ function Outcome({ overview, campaignPath, stamps, agreementLine }: Props) {
       <Part title={undecided ? `${counted(undecided, 'candidate')} undecided` : 'Every candidate is decided'}>
         <StateBar counts={outcome.counts} campaignPath={campaignPath} />
       </Part>
+      {firstPass}
       <GradingProgress overview={overview} />
       <Part title="How far the graders agree">
         {outcome.run ? (

@@ -7,6 +7,7 @@ import { LookingForm, type Looking } from './looking-form'
 import { PageHead } from './page-head'
 import { RuleHistory } from './rule-history'
 import { NamePatternForm, RuleForm } from './settings-forms'
+import { SheetForm, type SheetChoice } from './sheet-form'
 
 /** What a lead may change later, and what stays as it was made. */
 export function SettingsView({
@@ -16,6 +17,8 @@ export function SettingsView({
   looking,
   calibrationHref,
   changeLooking,
+  sheet,
+  changeSheet,
   versions,
   changeRule,
   changeNamePattern,
@@ -26,6 +29,8 @@ export function SettingsView({
   looking: Looking
   calibrationHref: string
   changeLooking: FormAction
+  sheet: SheetChoice
+  changeSheet: FormAction
   versions: RuleVersion[]
   changeRule: FormAction
   changeNamePattern: FormAction
@@ -74,6 +79,12 @@ export function SettingsView({
           </ButtonLink>
         </FormSection>
       </div>
+      <FormSection
+        title="First pass"
+        about="For searches of more than a few thousand: one or two people go over sheets of small stamps before the full team looks. What anyone of them sends on comes to the bench."
+      >
+        <SheetForm choice={sheet} action={changeSheet} />
+      </FormSection>
       <FormSection
         title="Pictures"
         about="The recipe that makes pictures of cutouts: views and their order, brightness, weights of the bands, close field, north up."

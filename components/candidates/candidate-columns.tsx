@@ -21,6 +21,9 @@ export const CANDIDATE_SORT: TableSort = { id: 'name', descending: false }
 /** A state filter's word for what a grader may not see yet. */
 export const UNGRADED = 'not graded by me'
 
+/** A state filter's word for what the first pass has not sent on to the bench. */
+export const NOT_SENT_ON = 'not sent on'
+
 const none = <span className="text-mute">–</span>
 const figure = (value: number | null | undefined, decimals: number) =>
   value === null || value === undefined ? none : value.toFixed(decimals)
@@ -168,7 +171,7 @@ const STATES = ['open', 'split', 'confirmed', 'set aside'] as const
 
 /** For each role a list of its own, made once: the score and what is calibration are for leads. */
 export const CANDIDATE_COLUMNS: Record<ColumnsFor, readonly TableColumn<CandidateRow>[]> = {
-  lead: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, SCORE, ...POSITION, DESIGNATION],
+  lead: [NAME, STATE([...STATES, NOT_SENT_ON]), ...JUDGED, PROBABILITY, SCORE, ...POSITION, DESIGNATION],
   grader: [NAME, STATE([UNGRADED, ...STATES]), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
   viewer: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
 }

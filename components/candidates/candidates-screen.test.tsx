@@ -74,12 +74,18 @@ it('says what to do while there are no candidates, to each role what they can do
 it('turns an address into what the server is asked for', () => {
   const search = new URLSearchParams('sort=-mean&state=split,not graded by me,nonsense&name= SWS &page=3')
   expect(candidateQuery('grader', search, 100)).toEqual({
-    filter: { name: 'SWS', states: ['split'], withheld: true },
+    filter: { name: 'SWS', states: ['split'], withheld: true, notSentOn: false },
     order: 'mean',
     descending: true,
     page: 2,
     pageSize: 100,
   })
+})
+
+it('finds for leads alone what the first pass did not send on', () => {
+  const search = new URLSearchParams('state=not sent on,split')
+  expect(candidateQuery('lead', search, 100).filter).toMatchObject({ states: ['split'], notSentOn: true })
+  expect(candidateQuery('viewer', search, 100).filter).toMatchObject({ states: ['split'], notSentOn: false })
 })
 
 it('does not take an order or a state from the address that the role does not have', () => {

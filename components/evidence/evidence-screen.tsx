@@ -21,6 +21,7 @@ import { CandidateFacts } from './candidate-facts'
 import { GradeList, gradesInWords } from './grade-list'
 import { Position } from './position'
 import { RulingForm } from './ruling-form'
+import { SendOn } from './send-on'
 import { RulingList, StateHistory } from './ruling-record'
 import { VerdictArithmetic } from './verdict-arithmetic'
 import { useViewKeys } from './use-view-keys'
@@ -49,6 +50,8 @@ export interface EvidenceScreenProps {
   asked: { by: string; note: string | null } | null
   /** For leads: rules on this candidate. */
   ruleAction: FormAction | null
+  /** For leads, where the first pass did not send it on. */
+  sendOnAction?: FormAction | null
 }
 
 function Section({ title, children }: { title: string; children: ReactNode }) {
@@ -62,7 +65,7 @@ function Section({ title, children }: { title: string; children: ReactNode }) {
 
 /** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
 export function EvidenceScreen(props: EvidenceScreenProps) {
-  const { slug, personId, evidence, neighbours, talk, asked, ruleAction } = props
+  const { slug, personId, evidence, neighbours, talk, asked, ruleAction, sendOnAction } = props
   const [view, setView] = useState(0)
   const [blinking, setBlinking] = useState(false)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
@@ -123,6 +126,11 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
         </div>
         <div className="flex min-w-0 flex-col gap-7">
           {judgement ? <JudgementColumn judgement={judgement} talk={talk} /> : <Withheld slug={slug} asked={asked} />}
+          {sendOnAction ? (
+            <Section title="Not sent on">
+              <SendOn action={sendOnAction} />
+            </Section>
+          ) : null}
           {judgement && ruleAction ? (
             <Section title="Rule on it">
               {judgement.calibration ? (

@@ -121,20 +121,23 @@ export interface CandidateFilter {
   states?: readonly CandidateState[]
   /** Candidates whose state the reader may not see yet. */
   withheld?: boolean
+  /** What the first pass has not sent on. */
+  notSentOn?: boolean
   /** Part of the name, without regard to case. */
   name?: string
   calibration?: boolean
 }
 
 function filtered(db: Kysely<DB>, scope: CandidateScope, filter: CandidateFilter) {
-  const { states = [], withheld = false, name, calibration } = filter
+  const { states = [], withheld = false, notSentOn = false, name, calibration } = filter
   const pattern = `%${(name ?? '').replace(/[\\%_]/g, '\\$&')}%`
   return candidates(db, scope)
-    .$if(states.length > 0 || withheld, (query) =>
+    .$if(states.length > 0 || withheld || notSentOn, (query) =>
       query.where((e) =>
         e.or([
           ...(states.length ? [e.and([e('candidate.state', 'in', [...states]), isRevealed(scope)])] : []),
           ...(withheld ? [e.not(isRevealed(scope))] : []),
+          ...(notSentOn ? [e.and([e('candidate.first_pass', '=', 'dropped'), e('candidate.truth', 'is', null)])] : []),
         ]),
       ),
     )

@@ -8,7 +8,7 @@ export interface LookSums {
 
 /**
  * Standing looks at imaged candidates, none counted above what is wanted, and looks wanted, by the rule or by a lead who
- * reopened; a candidate that a ruling has decided, or that is settled, wants no more than it has. For queries that join `candidate` and
+ * reopened; a candidate that a ruling has decided, or that is settled or was not sent on by the first pass, wants no more than it has. For queries that join `candidate` and
  * `ruling`, its standing one.
  */
 export function lookSums(gradesWanted: number | Expression<number>): Record<keyof LookSums, RawBuilder<number>> {
@@ -16,6 +16,8 @@ export function lookSums(gradesWanted: number | Expression<number>): Record<keyo
   const given = sql<number>`min(candidate.grades_given, ${most})`
   const wanted = sql<number>`case
     when ruling.outcome in ('confirmed', 'set aside') then ${given}
+    when candidate.first_pass = 'dropped' and (
+      select uses_sheet from campaign where campaign.id = candidate.campaign_id) = 1 then ${given}
     when candidate.settled = 1 then max(${given}, candidate.looks_asked)
     else ${most} end`
   const ofImaged = (looks: RawBuilder<number>) =>

@@ -47,6 +47,16 @@ it('does not let the order by mean or state give away what a grader has not judg
   }
 })
 
+it('finds what the first pass did not send on, for leads', async () => {
+  for (const name of ['waits', 'dropped', 'stamp']) await addImagedCandidate(scenario.db, scenario.campaign, name)
+  const set = (name: string, values: { first_pass?: 'dropped'; truth?: 'lens' }) =>
+    scenario.db.updateTable('candidate').set(values).where('name', '=', name).execute()
+  await set('dropped', { first_pass: 'dropped' })
+  await set('stamp', { first_pass: 'dropped', truth: 'lens' })
+  expect(names(await tableFor(scenario.lead, { filter: { notSentOn: true } }))).toEqual(['dropped'])
+  expect(await tableFor(scenario.graders[0], { filter: { notSentOn: true } })).toMatchObject({ count: 3 })
+})
+
 it('finds by part of the name, taking % and _ for themselves', async () => {
   for (const name of ['SWS 10%', 'SWS 100', 'sws_1']) await addImagedCandidate(scenario.db, scenario.campaign, name)
   expect(names(await tableFor(scenario.lead, { filter: { name: 'sws' } }))).toHaveLength(3)

@@ -44,7 +44,7 @@ export interface CandidateTableInput {
 
 const LEAD_ORDERS: readonly CandidateOrder[] = ['score']
 
-/** A page of the table of candidates. Score and calibration sort and filter for leads only, and are passed over for others. */
+/** A page of the table of candidates. Score, calibration and the first pass sort and filter for leads only, and are passed over for others. */
 export async function candidateTable(
   db: Kysely<DB>,
   permit: CampaignPermit<'read'>,
@@ -52,7 +52,7 @@ export async function candidateTable(
 ): Promise<CandidateTable> {
   const scope = candidateScope(permit)
   const isLead = permit.role === 'lead'
-  const filter = isLead ? input.filter : { ...input.filter, calibration: undefined }
+  const filter = isLead ? input.filter : { ...input.filter, calibration: undefined, notSentOn: false }
   const order = isLead || !LEAD_ORDERS.includes(input.order) ? input.order : 'name'
   const count = await countCandidateSlice(db, scope, filter)
   const all = await countCandidateSlice(db, scope, {})

@@ -3,6 +3,7 @@ import { Shell, type ShellLink } from '@/components/shell/shell'
 import { campaignCounts } from '@/lib/work/campaigns/campaign-counts'
 import { practiceUseful } from '@/lib/work/calibration/practice'
 import { waitingFor } from '@/lib/work/discussion/list-mentions'
+import { mayPass } from '@/lib/work/sheet/may-pass'
 
 /** The places of one campaign. What each page shows is checked by the page itself: layouts do not run again on navigation. */
 export default async function CampaignLayout({ params, children }: LayoutProps<'/campaigns/[slug]'>) {
@@ -14,8 +15,10 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
   // None for graders: a number that leaves calibration stamps out beside a list that hides them would give their number away.
   const count = (field: keyof typeof counts) =>
     permit.role === 'grader' ? undefined : { url: `/api/campaigns/${slug}/counts`, field, initial: counts[field] }
+  const passes = permit.campaign.uses_sheet === 1 && (await mayPass(db, permit))
   const links: ShellLink[] = [
     { href: home, label: 'Overview', exact: true },
+    ...(passes ? [{ href: `${home}/sheet`, label: 'First pass' }] : []),
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/bench`, label: 'Bench' }]),
     ...((await practiceUseful(db, permit)) ? [{ href: `${home}/practice`, label: 'Practice' }] : []),
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/me`, label: 'Your looks' }]),

@@ -1,10 +1,13 @@
 import { Suspense } from 'react'
 import { permitPage } from '@/app/_lib/page-permit'
 import { AgreementLine } from '@/components/agreement/agreement-line'
+import { FirstPassPart } from '@/components/campaigns/first-pass-part'
 import { GraderOverview, LeadOverview, ViewerOverview } from '@/components/campaigns/overview-view'
 import { fromJson } from '@/db/schema/values'
 import { campaignOverview } from '@/lib/work/campaigns/campaign-overview'
 import { agreementReport } from '@/lib/work/reports/agreement-report'
+import { mayPass } from '@/lib/work/sheet/may-pass'
+import { sheetCompleteness, sheetProgress } from '@/lib/work/sheet/sheet-progress'
 import { picturesOf } from '@/lib/work/stamps/candidate-pictures'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]'>) {
@@ -43,6 +46,7 @@ export default async function OverviewPage({ params }: PageProps<'/campaigns/[sl
       about={`${campaign.survey} (${campaign.acronym}), bands ${bands}`}
       campaignPath={`/campaigns/${slug}`}
       stamps={stamps}
+      firstPass={campaign.uses_sheet === 1 && role !== 'grader' ? <FirstPass slug={slug} /> : null}
       agreementLine={
         <Suspense fallback={null}>
           <AgreementAlerts slug={slug} />
@@ -58,4 +62,17 @@ async function AgreementAlerts({ slug }: { slug: string }) {
   if (permit.role === 'grader') return null
   const { alerts } = await agreementReport(db, permit)
   return <AgreementLine alerts={alerts.length} campaignPath={`/campaigns/${slug}`} />
+}
+
+async function FirstPass({ slug }: { slug: string }) {
+  const { db, permit } = await permitPage(slug, 'read')
+  const lead = permit.role === 'lead' ? (await permitPage(slug, 'lead')).permit : null
+  return (
+    <FirstPassPart
+      progress={await sheetProgress(db, permit)}
+      completeness={lead && (await sheetCompleteness(db, lead))}
+      campaignPath={`/campaigns/${slug}`}
+      passes={await mayPass(db, permit)}
+    />
+  )
 }

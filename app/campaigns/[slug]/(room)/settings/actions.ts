@@ -8,6 +8,8 @@ import { changeLooking } from '@/lib/work/campaigns/change-looking'
 import { changeNamePattern, changeRule } from '@/lib/work/campaigns/change-settings'
 import { LookingInput } from '@/lib/work/campaigns/looking-input'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
+import { changeSheet } from '@/lib/work/sheet/change-sheet'
+import { SheetSettingsInput } from '@/lib/work/sheet/mark-input'
 
 export async function changeRuleAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
   try {
@@ -38,6 +40,22 @@ export async function changeLookingAction(slug: string, _before: FormState, form
     await changeLooking(db, permit, LookingInput.parse(Object.fromEntries(form)))
     revalidatePath(`/campaigns/${slug}`, 'layout')
     return { done: 'Saved. It holds for looks from now on.' }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}
+
+export async function changeSheetAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    const usesSheet = form.get('usesSheet') === 'on'
+    await changeSheet(db, permit, SheetSettingsInput.parse({ usesSheet, passers: form.getAll('passers') }))
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return {
+      done: usesSheet
+        ? 'Saved. Only what the first pass sends on comes to the bench now, with what has been graded.'
+        : 'Saved. Every candidate comes to the bench.',
+    }
   } catch (error) {
     return failedForm(error, form)
   }

@@ -3,7 +3,8 @@ import { permitPage } from '@/app/_lib/page-permit'
 import { SettingsView } from '@/components/campaigns/settings-view'
 import { fromJson } from '@/db/schema/values'
 import { listRuleVersions } from '@/lib/work/campaigns/change-settings'
-import { changeLookingAction, changeNamePatternAction, changeRuleAction } from './actions'
+import { sheetSettings } from '@/lib/work/sheet/change-sheet'
+import { changeLookingAction, changeSheetAction, changeNamePatternAction, changeRuleAction } from './actions'
 
 export const metadata: Metadata = { title: 'Settings' }
 
@@ -25,6 +26,8 @@ export default async function SettingsPage({ params }: PageProps<'/campaigns/[sl
       }}
       calibrationHref={`/campaigns/${slug}/calibration`}
       changeLooking={changeLookingAction.bind(null, slug)}
+      sheet={await sheetSettings(db, permit)}
+      changeSheet={changeSheetAction.bind(null, slug)}
       changeRule={changeRuleAction.bind(null, slug)}
       changeNamePattern={changeNamePatternAction.bind(null, slug)}
     />

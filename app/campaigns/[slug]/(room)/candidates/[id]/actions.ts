@@ -1,5 +1,6 @@
 'use server'
 
+import { randomUUID } from 'node:crypto'
 import { revalidatePath } from 'next/cache'
 import { permitGrader, permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
@@ -11,6 +12,7 @@ import { postMessage } from '@/lib/work/discussion/post-message'
 import { withdrawAsk } from '@/lib/work/discussion/withdraw-ask'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { parseRulingForm } from '@/lib/work/rulings/ruling-input'
+import { recordMarks } from '@/lib/work/sheet/record-marks'
 
 /** Rules on a candidate from its own page, which stays. */
 export async function ruleOnCandidateAction(
@@ -75,6 +77,24 @@ export async function withdrawAskAction(slug: string, _before: FormState, form: 
     return { done: `The look asked of ${name} is withdrawn.` }
   } catch (error) {
     if (error instanceof Problem && error.status === 409) revalidatePath(`/campaigns/${slug}`, 'layout')
+    return failedForm(error, form)
+  }
+}
+
+/** Sends on what the first pass did not. */
+export async function sendOnAction(
+  slug: string,
+  candidateId: number,
+  _before: FormState,
+  form: FormData,
+): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    const { refused } = await recordMarks(db, permit, [{ id: randomUUID(), candidate: candidateId, mark: 'sent on' }])
+    if (refused[0]) return { message: refused[0].sentence }
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return { done: 'Sent on: it comes to the bench.' }
+  } catch (error) {
     return failedForm(error, form)
   }
 }

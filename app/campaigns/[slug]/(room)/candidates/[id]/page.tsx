@@ -6,7 +6,8 @@ import { askOfMe } from '@/lib/work/discussion/list-asks'
 import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
 import { neighboursOf } from '@/lib/work/rulings/find-neighbours'
 import { candidateName } from '@/lib/work/rulings/candidate-name'
-import { ruleOnCandidateAction } from './actions'
+import { isNotSentOn } from '@/lib/work/sheet/pass-of-candidate'
+import { ruleOnCandidateAction, sendOnAction } from './actions'
 import { talkOf } from './talk'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
@@ -36,7 +37,14 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
       neighbours={await neighboursOf(db, permit, id)}
       talk={await talkOf(db, permit, id, { calibration: evidence.judgement?.calibration ?? false })}
       asked={evidence.judgement ? null : await askOfMe(db, permit, id)}
+      sendOnAction={await sendOnOf(slug, id, permit.role)}
       ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}
     />
   )
+}
+
+async function sendOnOf(slug: string, id: number, role: string) {
+  if (role !== 'lead') return null
+  const { db, permit } = await permitPage(slug, 'lead', `/candidates/${id}`)
+  return (await isNotSentOn(db, permit, id)) ? sendOnAction.bind(null, slug, id) : null
 }
