@@ -25,7 +25,7 @@ describe('a candidate that comes back', () => {
     expect(grades()[0].body).toMatchObject({ grade: 'B', turned: 5 })
     await look()
     expect(name()).toBe('SWS-2')
-    expect(document.querySelector<HTMLElement>('figure img')?.parentElement?.style.transform).toBe('')
+    expect(document.querySelector<HTMLElement>('figure img')?.parentElement?.style.transform).toBe('none')
     await user.keyboard('n')
     await pause(50)
     expect(grades()[1].body).not.toHaveProperty('turned')

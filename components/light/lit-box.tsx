@@ -6,6 +6,7 @@ import { closeFactor } from '@/lib/science/imaging/close-field'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import type { StampGeometry } from '@/lib/science/imaging/stamp-geometry'
 import type { LightStore } from './light-store'
+import { turnedStyle } from './turned'
 import { usePanAndPinch } from './use-pan-and-pinch'
 import { useClose, useInUse, useZoomScale } from './use-light'
 
@@ -23,6 +24,7 @@ export function LitBox({
   geometry,
   closeFieldArcsec = CLOSE_FIELD_ARCSEC,
   scrolls,
+  turned,
   children,
 }: {
   light: LightStore
@@ -36,6 +38,8 @@ export function LitBox({
   closeFieldArcsec?: number
   /** The page scrolls, so one finger that moves up or down is the page's while the picture is whole. */
   scrolls: boolean
+  /** The picture is shown turned; scale bar and compass are given as they are then. */
+  turned?: number
   children: ReactNode
 }) {
   const box = useRef<HTMLDivElement>(null)
@@ -60,15 +64,26 @@ export function LitBox({
     follow()
     return light.zoom.subscribe(follow)
   }, [light, scrolls, closer])
+  const pictures = (
+    <>
+      {children}
+      {inUse && planesUrl ? (
+        <Suspense fallback={null}>
+          <LightCanvas light={light} planesUrl={planesUrl} view={view} />
+        </Suspense>
+      ) : null}
+    </>
+  )
   return (
     <div ref={box} className="absolute inset-0">
       <div ref={layer} className="absolute inset-0">
-        {children}
-        {inUse && planesUrl ? (
-          <Suspense fallback={null}>
-            <LightCanvas light={light} planesUrl={planesUrl} view={view} />
-          </Suspense>
-        ) : null}
+        {turned ? (
+          <div className="absolute inset-0" style={turnedStyle(turned)}>
+            {pictures}
+          </div>
+        ) : (
+          pictures
+        )}
       </div>
       {size && geometry ? (
         <ZoomedOverlay
