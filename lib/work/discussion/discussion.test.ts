@@ -135,6 +135,25 @@ describe('a mention', () => {
     expect((await mentions(plover))[0].message?.text).toBe('@G04, everybody says N here.')
   })
 
+  it('whose mail carries the message has told a grader of the others’ judgement: their grade stands, and no look is asked', async () => {
+    await say(dunlin, '@G02 four of us say N')
+    await expect(grade(curlew, 'N')).rejects.toMatchObject({ type: 'judgement-seen' })
+    const lead = await scenario.permit(scenario.lead, 'lead')
+    const ask = askLooks(scenario.db, lead, candidate, AskInput.parse({ people: [curlew.id] }))
+    await expect(ask).rejects.toMatchObject({ type: 'judgement-seen' })
+  })
+
+  it('whose mail tells nothing leaves a grader free: who has not judged it, or is asked for a look', async () => {
+    await grade(plover, 'U')
+    const lead = await scenario.permit(scenario.lead, 'lead')
+    await askLooks(scenario.db, lead, candidate, AskInput.parse({ people: [curlew.id] }))
+    await say(scenario.lead, '@curlew and @plover, four of us say N')
+    const bodies = (await mails()).map(({ body }) => body).join()
+    expect(bodies).not.toContain('four of us')
+    expect(await scenario.db.selectFrom('judgement_shown').selectAll().execute()).toEqual([])
+    expect((await grade(plover, 'B')).replaced).toBeDefined()
+  })
+
   it('of oneself, of a viewer, of somebody who has left, or of nobody here is just text', async () => {
     const lead = await scenario.permit(scenario.lead, 'lead')
     await endMembership(scenario.db, lead, plover.id)

@@ -9,7 +9,7 @@ import { isoTime } from '@/lib/platform/clock'
 import { config } from '@/lib/platform/config/config'
 import { queueMail } from '@/lib/platform/mail/queue-mail'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
-import { revealedTo } from '@/lib/work/grading/may-reveal'
+import { noteTold, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { mentionMail } from './mention-mail'
 import { partsOf, plainOf, resolveMentions } from './mentions'
@@ -17,7 +17,8 @@ import type { MessageInput } from './message-input'
 
 /**
  * Appends a message to the discussion of a candidate; whoever it mentions is written to. Leads and graders write, graders once
- * they have judged the candidate themselves. Message, mentions, mails and audit event are written together.
+ * they have judged the candidate themselves. A grader whose mail carries the message has been told of the others' judgement:
+ * from then on their own grade stands. Message, mentions, mails and audit event are written together.
  * @throws Problem 404 no such candidate here; 409 `grade-first`.
  */
 export async function postMessage(
@@ -68,6 +69,8 @@ async function writeTo(
 ): Promise<void> {
   if (!person.email) return
   const named = person.role === 'lead'
+  const told = named || person.judged === 1
+  if (told && !named) await noteTold(transaction, campaign.id, person, candidate.id)
   const author = message.people.find(({ personId }) => personId === viewer.id)
   const by = named ? viewer.name : (author?.pseudonym ?? 'A member')
   const text = plainOf(partsOf(message.body, message.mentioned, { personId: person.personId, named }))
@@ -76,7 +79,7 @@ async function writeTo(
     campaignName: campaign.name,
     candidate: candidate.name,
     link: `${config().siteUrl}/campaigns/${campaign.slug}/candidates/${candidate.id}#discussion`,
-    message: named || person.judged ? { by, text } : null,
+    message: told ? { by, text } : null,
   })
   await queueMail(transaction, mail)
 }

@@ -38,3 +38,14 @@ export async function noteShown(
   const { campaign, viewer } = permit
   await insertJudgementsShown(db, { campaignId: campaign.id, personId: viewer.id, candidateIds, now: isoTime() })
 }
+
+/** Notes that a grader is being told of the others' judgement by somebody else, as by a mail that carries what they wrote. */
+export async function noteTold(
+  db: Kysely<DB>,
+  campaignId: number,
+  grader: { personId: number },
+  candidateId: number,
+): Promise<void> {
+  const { personId } = grader
+  await insertJudgementsShown(db, { campaignId, personId, candidateIds: [candidateId], now: isoTime() })
+}
