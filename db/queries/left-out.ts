@@ -101,12 +101,14 @@ export interface LookNeed {
   looksAsked: number
   /** Standing first looks of people who are left out. */
   looksLost: number
+  /** Places that people hold on their benches just now. */
+  looksHeld: number
 }
 
-/** A page of the campaign's candidates by id, calibration stamps left out. */
+/** A page of the campaign's candidates by id, calibration stamps left out, as they stand at `now`. */
 export async function listLookNeeds(
   db: Kysely<DB>,
-  page: { campaignId: number; after: number; limit: number },
+  page: { campaignId: number; after: number; limit: number; now: IsoTime },
   leftOut: readonly number[],
 ): Promise<LookNeed[]> {
   return db
@@ -123,6 +125,11 @@ export async function listLookNeeds(
     .select(
       sql<number>`(select count(*) from grade where grade.candidate_id = candidate.id and grade.occasion = 'first'
         and grade.replaces is null and grade.person_id in ${among(leftOut)})`.as('looksLost'),
+    )
+    .select(
+      sql<number>`(select count(*) from lease where lease.candidate_id = candidate.id and lease.until > ${page.now})`.as(
+        'looksHeld',
+      ),
     )
     .where('candidate.id', '>', page.after)
     .where(inCampaign('candidate.campaign_id', page.campaignId))

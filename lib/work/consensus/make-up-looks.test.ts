@@ -67,6 +67,28 @@ describe.each([
     expect(await served(3)).toBe(false)
   })
 
+  it('does not take back a look that somebody holds on their bench; once it has come there is none', async () => {
+    await open(rule, 'BNB')
+    await leave(1, true)
+    expect(await served(3)).toBe(true)
+    await leave(1, false)
+    expect(await state()).toEqual({ state: 'split', looks_asked: 4 })
+    await expect(give(4, 'C')).rejects.toMatchObject({ type: 'candidate-full' })
+    expect((await give(3, 'C')).grade.grade).toBe('C')
+    await run()
+    await expect(give(4, 'C')).rejects.toMatchObject({ type: 'candidate-full' })
+  })
+
+  it('takes back at the next run what a lapsed lease held', async () => {
+    await open(rule, 'BNB')
+    await leave(1, true)
+    expect(await served(3)).toBe(true)
+    await scenario.db.updateTable('lease').set({ until: '2020-01-01T00:00:00.000Z' }).execute()
+    await leave(1, false)
+    expect(await state()).toEqual({ state: 'split', looks_asked: 3 })
+    await expect(give(3, 'C')).rejects.toMatchObject({ type: 'candidate-full' })
+  })
+
   it('leaves alone what a lead has reopened', async () => {
     await open(rule, 'BNB')
     await ruleOnCandidate(scenario.db, await lead(), id, { outcome: 'open', grade: null, reason: 'look again' })

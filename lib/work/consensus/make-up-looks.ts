@@ -3,6 +3,7 @@ import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { listLookNeeds, setLooksAsked, type LookNeed } from '@/db/queries/left-out'
 import type { DB } from '@/db/schema'
+import { isoTime } from '@/lib/platform/clock'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 
 const PAGE = 500
@@ -10,7 +11,8 @@ const PAGE = 500
 /**
  * A look of a person who is left out takes a place and decides nothing. Where that leaves a candidate open with no place to give, as
  * many looks are asked for as were lost; once the person counts again, or a verdict has been reached, what was asked for and not
- * given is taken back. What a lead's ruling has reopened is left as the lead asked. In short transactions a page each.
+ * given is taken back, except what somebody holds on their bench: a lease holds a place. What a lead's ruling has reopened is left as
+ * the lead asked. In short transactions a page each.
  */
 export async function makeUpLooks(
   db: Kysely<DB>,
@@ -22,7 +24,8 @@ export async function makeUpLooks(
   while (after !== undefined) {
     const from: number = after
     after = await db.transaction().execute(async (transaction) => {
-      const page = await listLookNeeds(transaction, { campaignId, after: from, limit: PAGE }, leftOut)
+      const range = { campaignId, after: from, limit: PAGE, now: isoTime() }
+      const page = await listLookNeeds(transaction, range, leftOut)
       const wants = page.map((need) => ({ id: need.id, looksAsked: looksAskedFor(need, rule.gradesWanted) }))
       await setLooksAsked(
         transaction,
@@ -35,8 +38,8 @@ export async function makeUpLooks(
 }
 
 function looksAskedFor(need: LookNeed, gradesWanted: number): number {
-  const { looksGiven, looksAsked, looksLost } = need
+  const { looksGiven, looksAsked, looksLost, looksHeld } = need
   if (need.ruled === 1) return looksAsked
   const stuck = need.state === 'open' && need.settled === 0 && looksLost > 0 && looksGiven >= gradesWanted
-  return stuck ? gradesWanted + looksLost : Math.min(looksAsked, looksGiven)
+  return stuck ? gradesWanted + looksLost : Math.min(looksAsked, looksGiven + looksHeld)
 }

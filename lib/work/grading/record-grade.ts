@@ -178,7 +178,7 @@ async function assertRoom(
   if (candidate.grades_given >= wanted) {
     throw conflict(
       'candidate-full',
-      `Others have given this candidate the ${wanted} grades it wanted meanwhile, so yours was not taken. Nothing else is affected; go on with the next.`,
+      `This candidate has the ${wanted} grades that it wants by now, so yours was not taken. Nothing else is affected; go on with the next.`,
     )
   }
   const { own, others } = await countLiveLeases(transaction, candidate.id, personId, isoTime())

@@ -66,6 +66,16 @@ it.each(['by verdict', 'confirmed', 'set aside'] as const)(
   },
 )
 
+it('keeps the place that somebody holds on their bench when the lead rules by verdict', async () => {
+  const [, , third, fourth] = scenario.graders
+  await rule('open')
+  expect((await queueOf(third)).ids).toEqual([full])
+  await rule('by verdict')
+  await expect(give(fourth)).rejects.toMatchObject({ type: 'candidate-full' })
+  expect((await give(third)).grade.grade).toBe('B')
+  await expect(give(fourth)).rejects.toMatchObject({ type: 'candidate-full' })
+})
+
 it('grants nothing beyond the rule to a candidate that still wants looks', async () => {
   const open = await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
   const permit = await scenario.permit(scenario.lead, 'lead')

@@ -3,6 +3,7 @@ import type { Kysely } from 'kysely'
 import { setAsksWithdrawn } from '@/db/queries/asked-looks'
 import { findCandidate } from '@/db/queries/candidates'
 import { listVerdictsOf } from '@/db/queries/verdicts'
+import { countLiveLeases } from '@/db/queries/grading'
 import { insertRuling, listRulingsOf } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { Candidate, CandidateState } from '@/db/schema/intake'
@@ -21,7 +22,8 @@ export interface RulingAnswer {
 
 /**
  * A lead decides a candidate. The ruling is appended and stands over every verdict until a newer ruling; 'by verdict' steps
- * back, and the newest verdict holds again. Looks that were asked for are withdrawn when it is decided. State, change, catalogue and audit event are written with it or not at all.
+ * back, and the newest verdict holds again. Looks that were asked for are withdrawn when it is decided. State, change, catalogue and
+ * audit event are written with it or not at all.
  * @throws Problem 404 no such candidate here; 409 `calibration`, `ruled-meanwhile`, `no-ruling`. ZodError on bad input.
  */
 export async function ruleOnCandidate(
@@ -39,7 +41,8 @@ export async function ruleOnCandidate(
     const { outcome, grade, reason } = ruling
     const personId = permit.viewer.id
     const { gradesWanted } = await ruleInForce(transaction, permit.campaign.id)
-    const looksAsked = looksAskedBy(outcome, candidate, gradesWanted)
+    const { own, others } = await countLiveLeases(transaction, candidateId, personId, now)
+    const looksAsked = looksAskedBy(outcome, candidate, gradesWanted, own + others)
     const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
     const rulingId = await insertRuling(transaction, row)
     if (outcome === 'confirmed' || outcome === 'set aside') await setAsksWithdrawn(transaction, { candidateId }, now)
@@ -58,12 +61,17 @@ export async function ruleOnCandidate(
 
 /**
  * Reopening a candidate that has all its looks, or is settled, asks for one more; again reopened it is one more again. Any other
- * ruling takes back what was asked for and not given. The looks that stand are never above the larger of what is asked and what
- * the rule wants.
+ * ruling takes back what was asked for and neither given nor held on somebody's bench: a lease holds a place. The looks that stand
+ * are never above the larger of what is asked and what the rule wants.
  */
-function looksAskedBy(outcome: RulingInput['outcome'], candidate: Candidate, gradesWanted: number): number {
+function looksAskedBy(
+  outcome: RulingInput['outcome'],
+  candidate: Candidate,
+  gradesWanted: number,
+  looksHeld: number,
+): number {
   const { grades_given: given, looks_asked: asked } = candidate
-  if (outcome !== 'open') return Math.min(asked, given)
+  if (outcome !== 'open') return Math.min(asked, given + looksHeld)
   const wantsNone = given >= Math.max(gradesWanted, asked) || (candidate.settled === 1 && given >= asked)
   return wantsNone ? given + 1 : asked
 }
