@@ -170,7 +170,7 @@ export async function findRunPace(db: Kysely<DB>, campaignId: number): Promise<R
 
 /**
  * Whether any imaged candidate has fewer looks than wanted, or where looks end with settling, one of any worth. What a ruling has
- * decided counts as wanting; each is one step in an index.
+ * decided counts as wanting, calibration stamps do not: nothing is judged of them. A walk in an index past the stamps.
  */
 export async function wantsAnyLook(
   db: Kysely<DB>,
@@ -183,6 +183,7 @@ export async function wantsAnyLook(
     .select('id')
     .where('campaign_id', '=', campaignId)
     .where('imaged_at', 'is not', null)
+    .where('truth', 'is', null)
     .where(untilSettled ? sql<SqlBool>`settled = 0 and look_value > 0` : sql<SqlBool>`grades_given < ${gradesWanted}`)
     .limit(1)
     .executeTakeFirst()

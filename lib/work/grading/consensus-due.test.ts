@@ -110,6 +110,24 @@ describe('the consensus is asked for', () => {
     expect(await waiting()).toBe(2)
   })
 
+  it.each(['mean', 'reliability'] as const)(
+    'at once when none but calibration stamps want another look, by the method %s',
+    async (method) => {
+      if (method === 'mean') {
+        const lead = await scenario.permit(scenario.lead, 'lead')
+        await changeRule(scenario.db, lead, RuleInput.parse({ method, gradesWanted: 6, leastGrades: 1 }))
+      }
+      await runOf(100_000)
+      const stamps = ids.slice(1)
+      const unseen = { truth: 'lens', look_value: 0.3 } as const
+      await scenario.db.updateTable('candidate').set(unseen).where('id', 'in', stamps).execute()
+      for (const grader of [0, 1, 2, 3, 4]) await give(grader, 0, grader % 2 ? 'A' : 'N')
+      expect(await waiting()).toBe(600)
+      await give(5, 0, 'N')
+      expect(await waiting()).toBe(2)
+    },
+  )
+
   it('at once when the rule was changed since the newest run', async () => {
     await runOf(100_000)
     await changeRule(
