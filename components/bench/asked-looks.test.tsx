@@ -36,7 +36,7 @@ describe('a look that was asked for', () => {
     expect(screen.getByText('1 more asked of you')).toBeVisible()
     await user.keyboard('b')
     await waitFor(() => expect(sent).toHaveLength(1))
-    expect(sent[0]).toMatchObject({ url: '/api/campaigns/north/candidates/1/grade', body: { grade: 'B', asked: true } })
+    expect(sent[0]).toMatchObject({ url: '/api/campaigns/north/candidates/1/grade', body: { grade: 'B', asked: 9 } })
   })
 })
 

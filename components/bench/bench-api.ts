@@ -14,8 +14,8 @@ export interface GradeBody {
   view: string | null
   seconds: number
   reason: string | null
-  /** The answer to a look that was asked for by name. */
-  asked?: true
+  /** The answer to a look that was asked for by name: the id of the ask. */
+  asked?: number
   /** The answer to a candidate that came back, with the turn that it was shown in. */
   turned?: number
   /** Version of the recipe of the pictures that were judged. */

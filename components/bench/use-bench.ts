@@ -114,7 +114,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
         seconds: spent,
         reason,
         recipe: candidate.recipe,
-        ...(candidate.asked ? { asked: true as const } : {}),
+        ...(candidate.asked ? { asked: candidate.asked.id } : {}),
         ...(candidate.turned ? { turned: candidate.turned } : {}),
       },
     })

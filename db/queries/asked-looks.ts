@@ -53,6 +53,26 @@ export async function findOpenAsk(
   return row ?? null
 }
 
+/** What became of an ask of the person on the candidate: of the one with this id, or of their newest. */
+export async function findAskOf(
+  db: Kysely<DB>,
+  candidateId: number,
+  personId: number,
+  which: number | 'newest',
+): Promise<{ id: number; answered: 0 | 1; withdrawn: 0 | 1 } | null> {
+  const row = await db
+    .selectFrom('asked_look')
+    .select('id')
+    .select([sql<0 | 1>`grade_id is not null`.as('answered'), sql<0 | 1>`withdrawn_at is not null`.as('withdrawn')])
+    .where('candidate_id', '=', candidateId)
+    .where('person_id', '=', personId)
+    .$if(which !== 'newest', (query) => query.where('id', '=', Number(which)))
+    .orderBy('id', 'desc')
+    .limit(1)
+    .executeTakeFirst()
+  return row ?? null
+}
+
 /** The answer is here; a lease that the person held on the candidate has served. */
 export async function setAskAnswered(
   db: Kysely<DB>,

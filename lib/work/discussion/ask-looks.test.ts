@@ -159,6 +159,17 @@ describe('the answer', () => {
     expect(await counted()).toEqual(['curlew C asked', 'dunlin N first'])
   })
 
+  it('says which ask it answers: named again it corrects that answer, and a newer ask stays open', async () => {
+    await ask([curlew])
+    const [{ id: first }] = await asks()
+    await grade(curlew, 'A', { asked: first })
+    await ask([curlew])
+    await grade(curlew, 'C', { asked: first })
+    expect(await counted()).toEqual(['curlew C asked', 'dunlin N first'])
+    expect(await askedOfMe(scenario.db, await scenario.permit(curlew, 'read'))).toBe(1)
+    await expect(grade(dunlin, 'A', { asked: first })).rejects.toMatchObject({ type: 'look-withdrawn' })
+  })
+
   it('is not a correction of an earlier grade that arrives late: that one corrects, and the ask stays open', async () => {
     await ask([curlew])
     await grade(curlew, 'C')
@@ -196,6 +207,21 @@ describe('an ask ends', () => {
     expect(await counted()).toEqual(['curlew B first', 'dunlin N first'])
     await ask([curlew])
     expect((await bench(curlew)).candidates).toHaveLength(1)
+  })
+
+  it('when it is withdrawn, also a second one: its answer is no correction of the one before', async () => {
+    await ask([plover])
+    await grade(plover, 'C')
+    await ask([plover])
+    const [, second] = await asks()
+    await withdrawAsk(scenario.db, await lead(), second.id)
+    for (const asked of [second.id, true]) {
+      await expect(grade(plover, 'A', { asked })).rejects.toMatchObject({ status: 409, type: 'look-withdrawn' })
+    }
+    expect(await counted()).toEqual(['curlew B first', 'plover C asked', 'dunlin N first'])
+    await ask([plover])
+    await expect(grade(plover, 'A', { asked: second.id })).rejects.toMatchObject({ type: 'look-withdrawn' })
+    expect(await askedOfMe(scenario.db, await scenario.permit(plover, 'read'))).toBe(1)
   })
 
   it('when the candidate is confirmed or set aside by ruling', async () => {

@@ -25,8 +25,13 @@ export const GradeInput = z
       )
       .nullish()
       .transform((text) => text || null),
-    /** The answer to a look that a lead asked for by name, as the queue told it. */
-    asked: z.boolean('Say true where this answers an asked look.').default(false),
+    /** The answer to a look that a lead asked for by name: its id as the queue told it, or true for the newest. */
+    asked: z
+      .union(
+        [z.boolean(), z.int().positive()],
+        'Send the id of the asked look that this answers, or true for the newest.',
+      )
+      .default(false),
     /** The answer to a candidate that came back turned, with the turn that the queue told. */
     turned: z
       .number('The turn is the number that the queue told.')
