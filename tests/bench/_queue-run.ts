@@ -43,8 +43,8 @@ export interface QueueRun {
   next: number[]
   nextOfDeepGrader: number[]
   grade: number[]
-  /** Fifty in one instant: each asking by itself, and until the last was answered. */
-  burst: { each: number; all: number }
+  /** Fifty in one instant, ms: of the processor for each, and until the last was answered. */
+  burst: { processor: number; all: number }
   refused: number
   aboveWanted: number
   plans: string[]
@@ -172,9 +172,10 @@ async function measure(db: Kysely<DB>, candidates: number, mode: QueueMode): Pro
     }
   }
   await Promise.all(people.map(sit))
-  const began = performance.now()
+  const [began, before] = [performance.now(), process.cpuUsage()]
   await Promise.all(people.map(ask))
   const all = performance.now() - began
+  const { user, system } = process.cpuUsage(before)
   const above = await sql<{ n: number }>`select count(*) as n from candidate where truth is null and grades_given > (
     select max(grades_wanted) from rule)`.execute(db)
   for (const times of [next, nextOfDeepGrader, grade, firstAsked]) times.sort((a, b) => a - b)
@@ -185,7 +186,7 @@ async function measure(db: Kysely<DB>, candidates: number, mode: QueueMode): Pro
     next,
     nextOfDeepGrader,
     grade,
-    burst: { each: all / GRADERS, all },
+    burst: { processor: (user + system) / 1000 / GRADERS, all },
     refused,
     aboveWanted: above.rows[0].n,
     plans: await plansOf(db, async (watched) => {
