@@ -4,10 +4,13 @@ import { mkdtemp, rm } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { sql } from 'kysely'
-import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { syncFolder } from '@/lib/platform/storage/sync-folder'
 import { openDatabase, openMemoryDatabase } from './connection'
 import { migrateToLatest } from './migrator'
 import { syncCommits, unsynced } from './unsynced'
+
+vi.mock(import('@/lib/platform/storage/sync-folder'), { spy: true })
 
 let folder: string
 beforeEach(async () => void (folder = await mkdtemp(path.join(tmpdir(), 'ringside-unsynced-'))))
@@ -57,5 +60,17 @@ describe('a commit that does not wait for the disk', () => {
       .execute()
     expect(keys.map(({ key }) => key)).toEqual(['one', 'two'])
     await again.destroy()
+  })
+
+  it('has its log brought to disk by name too, once a connection', async () => {
+    const db = openDatabase(path.join(folder, 'ringside.sqlite'))
+    await migrateToLatest(db)
+    vi.mocked(syncFolder).mockClear()
+    vi.mocked(syncFolder).mockRejectedValueOnce(new Error('no disk'))
+    await expect(syncCommits(db)).rejects.toThrow('no disk')
+    await syncCommits(db)
+    await syncCommits(db)
+    expect(vi.mocked(syncFolder).mock.calls).toEqual([[folder], [folder]])
+    await db.destroy()
   })
 })

@@ -1,5 +1,7 @@
 import { open } from 'node:fs/promises'
+import path from 'node:path'
 import { sql, type Kysely } from 'kysely'
+import { syncFolder } from '@/lib/platform/storage/sync-folder'
 import type { DB } from './schema'
 
 /**
@@ -18,6 +20,9 @@ export async function unsynced<T>(db: Kysely<DB>, work: (connection: Kysely<DB>)
   })
 }
 
+/** The log is made anew with a connection's first write and stays while it is open. */
+const namedLogs = new WeakSet<Kysely<DB>>()
+
 /** Brings all that was committed to disk, in a thread beside the process's own. */
 export async function syncCommits(db: Kysely<DB>): Promise<void> {
   const { rows } = await sql<{ name: string; file: string }>`pragma database_list`.execute(db)
@@ -30,4 +35,8 @@ export async function syncCommits(db: Kysely<DB>): Promise<void> {
   } finally {
     await log.close()
   }
+  // SQLite syncs the log's name with its own first sync of the log, which may not have come yet.
+  if (namedLogs.has(db)) return
+  await syncFolder(path.dirname(file))
+  namedLogs.add(db)
 }

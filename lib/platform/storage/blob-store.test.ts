@@ -2,8 +2,15 @@ import { createHash } from 'node:crypto'
 import { mkdir, mkdtemp, readdir, rm, utimes, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
-import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { setImmediate } from 'node:timers/promises'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { BlobStore } from './blob-store'
+import { syncFolder } from './sync-folder'
+
+vi.mock(import('./sync-folder'), { spy: true })
+
+/** FIPS 180-4, the 'abc' example of SHA-256. */
+const ABC = 'ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad'
 
 let folder: string
 let store: BlobStore
@@ -12,7 +19,10 @@ beforeEach(async () => {
   folder = await mkdtemp(path.join(tmpdir(), 'ringside-blobs-'))
   store = new BlobStore(path.join(folder, 'blobs'), path.join(folder, 'incoming'))
 })
-afterEach(() => rm(folder, { recursive: true, force: true }))
+afterEach(async () => {
+  vi.mocked(syncFolder).mockReset()
+  await rm(folder, { recursive: true, force: true })
+})
 
 async function* chunks(...parts: string[]): AsyncGenerator<Uint8Array> {
   for (const part of parts) yield new TextEncoder().encode(part)
@@ -23,8 +33,7 @@ const leftovers = () => readdir(path.join(folder, 'incoming')).catch(() => [])
 describe('BlobStore', () => {
   it('names bytes by their SHA-256 and gives them back', async () => {
     const blob = await store.put(new TextEncoder().encode('abc'))
-    // FIPS 180-4, the 'abc' example of SHA-256.
-    expect(blob.sha256).toBe('ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad')
+    expect(blob.sha256).toBe(ABC)
     expect(blob.bytes).toBe(3)
     expect(Buffer.from(await store.read(blob.sha256)).toString()).toBe('abc')
     expect(await store.has(blob.sha256)).toBe(true)
@@ -34,6 +43,25 @@ describe('BlobStore', () => {
     const streamed = await store.putStream(chunks('a', 'b', 'c'))
     expect(await store.put(new TextEncoder().encode('abc'))).toEqual(streamed)
     expect(await leftovers()).toEqual([])
+  })
+
+  it('answers when the names of the blob and of the new folders above it are on disk too', async () => {
+    const synced: string[] = []
+    vi.mocked(syncFolder).mockImplementation(async (one) => {
+      await setImmediate()
+      expect(await store.has(ABC)).toBe(true)
+      synced.push(path.relative(folder, one))
+    })
+    await store.putStream(chunks('abc'))
+    expect(synced.sort()).toEqual(['', 'blobs', 'blobs/ba', 'blobs/ba/78'])
+    await store.put(new TextEncoder().encode('abc'))
+    expect(synced.slice(4)).toEqual(['blobs/ba/78'])
+  })
+
+  it('is not told to hold what could not be named on disk', async () => {
+    vi.mocked(syncFolder).mockRejectedValue(new Error('no disk'))
+    await expect(store.putStream(chunks('abc'))).rejects.toThrow('no disk')
+    await expect(store.put(new TextEncoder().encode('abc'))).rejects.toThrow('no disk')
   })
 
   it('keeps nothing of a stream that breaks, so that half a file can never be taken for a whole one', async () => {

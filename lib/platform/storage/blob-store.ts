@@ -2,11 +2,12 @@ import { createHash, randomUUID } from 'node:crypto'
 import { constants, createReadStream, type ReadStream } from 'node:fs'
 import { access, mkdir, open, readdir, readFile, rename, stat, unlink, type FileHandle } from 'node:fs/promises'
 import path from 'node:path'
+import { syncFolder } from './sync-folder'
 
 /**
  * Blobs named by the SHA-256 of their bytes, in `aa/bb/<hash>` below one folder. A blob is written under a temporary name,
- * synced and renamed, so a name that exists has all of its bytes whatever happened to the process; the database row that
- * names it comes after.
+ * synced and renamed, and its name is synced too: a name that exists has all of its bytes, and a blob that was put is there
+ * under its name, whatever happened to process and machine. The database row that names it comes after.
  */
 export interface StoredBlob {
   sha256: string
@@ -15,6 +16,8 @@ export interface StoredBlob {
 
 export class BlobStore {
   readonly #madeFolders = new Set<string>()
+  /** Folders whose own names are on disk. */
+  readonly #syncedFolders = new Set<string>()
   constructor(
     private readonly folder: string,
     private readonly temporaryFolder: string,
@@ -34,7 +37,10 @@ export class BlobStore {
 
   async put(bytes: Uint8Array): Promise<StoredBlob> {
     const sha256 = createHash('sha256').update(bytes).digest('hex')
-    if (!(await this.has(sha256))) {
+    if (await this.has(sha256)) {
+      // Who is putting it at the same time may not have come so far.
+      await this.syncName(this.pathOf(sha256))
+    } else {
       const { temporary, handle } = await this.openTemporary()
       try {
         await handle.writeFile(bytes)
@@ -111,6 +117,15 @@ export class BlobStore {
   private async adopt(temporary: string, sha256: string): Promise<void> {
     const target = this.pathOf(sha256)
     await this.inFolder(path.dirname(target), () => rename(temporary, target))
+    await this.syncName(target)
+  }
+
+  /** The name of a blob, and once those of the folders above it. */
+  private async syncName(blob: string): Promise<void> {
+    const leaf = path.dirname(blob)
+    const fresh = [leaf, path.dirname(leaf), this.folder].filter((folder) => !this.#syncedFolders.has(folder))
+    await Promise.all([leaf, ...fresh.map((folder) => path.dirname(folder))].map(syncFolder))
+    for (const folder of fresh) this.#syncedFolders.add(folder)
   }
 
   /** Makes the folder once, and again where somebody has removed it since. */
@@ -122,7 +137,7 @@ export class BlobStore {
         if ((error as NodeJS.ErrnoException).code !== 'ENOENT') throw error
       }
     }
-    await mkdir(folder, { recursive: true })
+    if ((await mkdir(folder, { recursive: true })) !== undefined) this.#syncedFolders.clear()
     this.#madeFolders.add(folder)
     return work()
   }

@@ -1,6 +1,10 @@
-import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { mkdtemp, open, rm } from 'node:fs/promises'
+import { tmpdir } from 'node:os'
+import path from 'node:path'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import type { Kysely } from 'kysely'
-import { openMemoryDatabase } from '@/db/connection'
+import { openDatabase, openMemoryDatabase } from '@/db/connection'
+import { migrateToLatest } from '@/db/migrator'
 import type { DB } from '@/db/schema'
 import { commitTogether } from './commit-together'
 
@@ -49,5 +53,48 @@ describe('work of several requests', () => {
     expect(await Promise.all(wanted.map((key) => commitTogether(db, add(key))))).toEqual(wanted)
     expect(await commitTogether(db, add('last'))).toBe('last')
     expect(await keys()).toEqual(expect.arrayContaining([...wanted, 'last']))
+  })
+})
+
+describe('the answer to work that was committed without waiting for the disk', () => {
+  let folder: string
+  beforeEach(async () => {
+    await db.destroy()
+    folder = await mkdtemp(path.join(tmpdir(), 'ringside-together-'))
+    db = openDatabase(path.join(folder, 'ringside.sqlite'))
+    await migrateToLatest(db)
+  })
+  afterEach(async () => {
+    vi.restoreAllMocks()
+    await rm(folder, { recursive: true, force: true })
+  })
+
+  const spySync = async () => {
+    const handle = await open(folder, 'r')
+    const sync = vi.spyOn(Object.getPrototypeOf(handle) as typeof handle, 'sync')
+    await handle.close()
+    return sync
+  }
+
+  it('comes when it is on disk, not before', async () => {
+    let reached = () => {}
+    let release = () => {}
+    const syncing = new Promise<void>((resolve) => (reached = resolve))
+    const disk = new Promise<void>((resolve) => (release = resolve))
+    const sync = await spySync()
+    sync.mockImplementation(() => (reached(), disk))
+    let answered = false
+    const answer = commitTogether(db, add('a')).then((key) => ((answered = true), key))
+    await syncing
+    expect(await keys()).toContain('a')
+    expect(answered).toBe(false)
+    release()
+    expect(await answer).toBe('a')
+  })
+
+  it('is an error where the disk refuses', async () => {
+    const sync = await spySync()
+    sync.mockRejectedValue(new Error('no disk'))
+    await expect(commitTogether(db, add('a'))).rejects.toThrow('no disk')
   })
 })
