@@ -52,7 +52,13 @@ export function TruthMarks({
         const inner = rays.map((ray) => at(ray.positionAngleDeg, Math.max(0, ray.innerArcsec - MARGIN_ARCSEC)))
         const path =
           lengthDeg >= 360 ? `M${line(outer)}ZM${line(inner)}Z` : `M${line([...outer, ...inner.toReversed()])}Z`
-        return <path key={positionAngleDeg} d={path} vectorEffect="non-scaling-stroke" strokeDasharray="4 3" />
+        return (
+          <g key={positionAngleDeg}>
+            {/* Dark below, so that the line is seen on a bright core too. */}
+            <path d={path} vectorEffect="non-scaling-stroke" stroke="black" strokeWidth="3.5" strokeOpacity="0.7" />
+            <path d={path} vectorEffect="non-scaling-stroke" strokeDasharray="4 3" />
+          </g>
+        )
       })}
       <path
         d={`M${middle[0] - 1.2} ${middle[1]}h2.4M${middle[0]} ${middle[1] - 1.2}v2.4`}

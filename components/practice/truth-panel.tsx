@@ -1,4 +1,4 @@
-import { useEffect, useRef } from 'react'
+import { useEffect, useRef, useState } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { Button } from '@/components/ui/button'
 import { StampFigure } from '@/components/ui/stamp-figure'
@@ -6,7 +6,7 @@ import type { Confusion } from '@/lib/work/calibration/confusion'
 import type { PracticeStamp, PracticeTruth } from '@/lib/work/calibration/practice'
 import { TruthMarks } from './truth-marks'
 
-/** The picture with what was painted marked on it; holding the blink key takes the marks off. */
+/** The picture with what was painted marked on it; holding it, or the blink key, takes the marks off. */
 export function TruthStage({
   stamp,
   shown,
@@ -18,12 +18,20 @@ export function TruthStage({
   truth: PracticeTruth
   bare: boolean
 }) {
+  const [held, setHeld] = useState(false)
   const view = stamp.views.find(({ key }) => key === shown) ?? stamp.views[0]
   const side = Math.max(view?.width ?? 0, view?.height ?? 0)
   return (
     <figure className="flex min-h-0 min-w-0 flex-1 flex-col">
       <div className="grid min-h-0 flex-1 place-items-center px-2 [container-type:size] md:px-6 short:px-1">
-        <div className="relative aspect-square w-[min(100cqw,100cqh)] bg-black">
+        <div
+          className="relative aspect-square w-[min(100cqw,100cqh)] select-none bg-black [-webkit-touch-callout:none]"
+          onPointerDown={() => setHeld(true)}
+          onPointerUp={() => setHeld(false)}
+          onPointerLeave={() => setHeld(false)}
+          onPointerCancel={() => setHeld(false)}
+          onContextMenu={(event) => event.preventDefault()}
+        >
           <StampFigure
             src={view?.url ?? null}
             alt={`${stamp.name}, ${view?.label ?? ''}`}
@@ -31,13 +39,15 @@ export function TruthStage({
             height={view?.height ?? 0}
             geometry={view?.geometry ?? stamp.geometry}
           />
-          {truth.marks && !bare && view?.url ? (
+          {truth.marks && !bare && !held && view?.url ? (
             <TruthMarks marks={truth.marks} side={side} geometry={view.geometry} />
           ) : null}
         </div>
       </div>
       <figcaption className="flex h-9 shrink-0 items-center justify-center px-3 text-center text-note leading-4 text-tray-text">
-        {truth.marks ? 'The dashed lines go round the painted light. Hold Space to see the picture without them.' : ''}
+        {truth.marks
+          ? 'The dashed lines go round the painted light. Hold the picture, or Space, to see it without them.'
+          : ''}
       </figcaption>
     </figure>
   )
