@@ -14,6 +14,26 @@ function waiting(card: CampaignCard): string {
   return card.left ? `${counted(card.left, 'candidate')} left for you` : 'Nothing is left for you to grade.'
 }
 
+function Looks({ card }: { card: CampaignCard }) {
+  const { given, wanted, waiting } = card.looks
+  if (wanted === null || waiting === null) return null
+  return card.method === 'mean' ? (
+    <ProgressBar done={given} total={wanted} label={`Looks given in ${card.name}`} />
+  ) : (
+    <ProgressBar
+      done={card.imaged - waiting}
+      total={card.imaged}
+      label={`Candidates that want no more looks in ${card.name}`}
+    />
+  )
+}
+
+function looksInWords({ method, looks: { given, wanted, waiting } }: CampaignCard): string {
+  if (wanted === null || waiting === null) return given ? `, ${counted(given, 'look')} given` : ''
+  if (method === 'mean') return wanted ? `, ${percent(given, wanted)} of the looks given` : ''
+  return waiting ? `, ${waiting.toLocaleString('en')} ${waiting === 1 ? 'wants' : 'want'} more looks` : ''
+}
+
 function Card({ card }: { card: CampaignCard }) {
   const { confirmed, split } = card
   return (
@@ -33,10 +53,10 @@ function Card({ card }: { card: CampaignCard }) {
       </div>
       <p className="text-body font-semibold">{waiting(card)}</p>
       <div className="mt-auto flex flex-col gap-2">
-        <ProgressBar done={card.gradesGiven} total={card.gradesWanted} label={`Looks given in ${card.name}`} />
+        <Looks card={card} />
         <p className="text-note text-mute">
           {counted(card.candidates, 'candidate')}
-          {card.gradesWanted ? `, ${percent(card.gradesGiven, card.gradesWanted)} of the looks given` : ''}
+          {looksInWords(card)}
           {confirmed !== null && confirmed > 0 ? `, ${confirmed.toLocaleString('en')} confirmed` : ''}
           {split !== null && split > 0 && card.role !== 'lead' ? `, ${counted(split, 'split')}` : ''}
         </p>

@@ -40,7 +40,7 @@ function Outcome({ overview, campaignPath, stamps, agreementLine, firstPass }: P
         <StateBar counts={outcome.counts} campaignPath={campaignPath} />
       </Part>
       {firstPass}
-      <GradingProgress overview={overview} />
+      <GradingProgress overview={overview} usesSheet={Boolean(firstPass)} />
       <Part title="How far the graders agree">
         {outcome.run ? (
           <Agreement run={outcome.run} />

@@ -54,6 +54,8 @@ export interface CampaignSummary {
   /** Looks given and wanted at all imaged candidates together, as the overview counts them. */
   looksGiven: number
   looksWanted: number
+  /** Candidates that want more looks than they have. */
+  looksWaiting: number
   confirmed: number
   split: number
 }
@@ -90,6 +92,7 @@ export async function listCampaigns(db: Kysely<DB>, personId: number): Promise<C
       e.fn.count<number>('candidate.imaged_at').as('imaged'),
       looks.given.as('looksGiven'),
       looks.wanted.as('looksWanted'),
+      looks.waiting.as('looksWaiting'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'confirmed').as('confirmed'),
       e.fn.count<number>('candidate.id').filterWhere('candidate.state', '=', 'split').as('split'),
     ])

@@ -4,12 +4,14 @@ import type { DB } from '../schema'
 export interface LookSums {
   given: number
   wanted: number
+  /** Candidates that want more looks than they have. */
+  waiting: number
 }
 
 /**
  * Standing looks at imaged candidates, none counted above what is wanted, and looks wanted, by the rule or by a lead who
- * reopened; a candidate that a ruling has decided, or that is settled or was not sent on by the first pass, wants no more than it has. For queries that join `candidate` and
- * `ruling`, its standing one.
+ * reopened; a candidate that a ruling has decided, or that is settled or was not sent on by the first pass, wants no more than
+ * it has. For queries that join `candidate` and `ruling`, its standing one.
  */
 export function lookSums(gradesWanted: number | Expression<number>): Record<keyof LookSums, RawBuilder<number>> {
   const most = sql<number>`max(${gradesWanted}, candidate.looks_asked)`
@@ -22,7 +24,7 @@ export function lookSums(gradesWanted: number | Expression<number>): Record<keyo
     else ${most} end`
   const ofImaged = (looks: RawBuilder<number>) =>
     sql<number>`coalesce(sum(case when candidate.imaged_at is not null then ${looks} end), 0)`
-  return { given: ofImaged(given), wanted: ofImaged(wanted) }
+  return { given: ofImaged(given), wanted: ofImaged(wanted), waiting: ofImaged(sql<number>`(${wanted} > ${given})`) }
 }
 
 export async function sumLooks(
@@ -30,11 +32,11 @@ export async function sumLooks(
   { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
   gradesWanted: number,
 ): Promise<LookSums> {
-  const { given, wanted } = lookSums(gradesWanted)
+  const { given, wanted, waiting } = lookSums(gradesWanted)
   return db
     .selectFrom('candidate')
     .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
-    .select([given.as('given'), wanted.as('wanted')])
+    .select([given.as('given'), wanted.as('wanted'), waiting.as('waiting')])
     .where('candidate.campaign_id', '=', campaignId)
     .$if(!withCalibration, (query) => query.where('candidate.truth', 'is', null))
     .executeTakeFirstOrThrow()

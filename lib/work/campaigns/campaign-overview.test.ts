@@ -46,7 +46,7 @@ it('counts looks given of wanted, and what is left for each person', async () =>
   const [first, second] = [await addImagedCandidate(db, campaign, 'A'), await addImagedCandidate(db, campaign, 'B')]
   for (const grader of graders.slice(0, 3)) await addGrade(first, grader.id)
   await addGrade(second, graders[0].id)
-  expect((await overviewOf(scenario.lead)).grading).toEqual({ given: 4, wanted: 6 })
+  expect((await overviewOf(scenario.lead)).grading).toEqual({ given: 4, wanted: 6, waiting: 1 })
   expect((await overviewOf(graders[0])).mine).toEqual({ left: 0, lookedAt: 2 })
   expect((await overviewOf(graders[1])).mine).toEqual({ left: 1, lookedAt: 1 })
 })
@@ -68,11 +68,11 @@ it('wants no more looks at what a ruling has decided', async () => {
     .returning('id')
     .executeTakeFirstOrThrow()
   await db.updateTable('candidate').set({ ruling_id: ruling.id }).where('id', '=', id).execute()
-  expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 1 })
+  expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 1, waiting: 0 })
   // The home page and the API count as the overview does.
   await addImagedCandidate(db, campaign, 'B')
-  expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 4 })
-  expect((await listCampaigns(db, lead))[0]).toMatchObject({ gradesGiven: 1, gradesWanted: 4 })
+  expect((await overviewOf(lead)).grading).toEqual({ given: 1, wanted: 4, waiting: 1 })
+  expect((await listCampaigns(db, lead))[0]).toMatchObject({ looks: { given: 1, wanted: 4, waiting: 1 } })
 })
 
 it('tells a grader no outcome, a viewer no upkeep, and counts calibration stamps for nobody but graders', async () => {
@@ -89,9 +89,36 @@ it('tells a grader no outcome, a viewer no upkeep, and counts calibration stamps
   expect(forGrader).toMatchObject({ candidates: 2, imaged: 2, grading: { given: 0, wanted: 6 } })
   const table = { filter: {}, order: 'id', descending: false, page: 0, pageSize: 9 } as const
   expect((await candidateTable(db, await scenario.permit(graders[0], 'read'), table)).all).toBe(forGrader.candidates)
-  expect((await listCampaigns(db, graders[0]))[0]).toMatchObject({ candidates: 2, imaged: 2, left: 2 })
+  // What is left is search candidates: stamps are mixed in by their share.
+  expect((await listCampaigns(db, graders[0]))[0]).toMatchObject({ candidates: 2, imaged: 2, left: 1 })
   expect((await listCampaigns(db, reader))[0]).toMatchObject({ candidates: 1, imaged: 1 })
   expect((await overviewOf(lead)).upkeep).toEqual({ graders: 5, openInvitations: 0, refusedFiles: 0, jobs: 0 })
+})
+
+it('tells no grader how many looks the reliability method still wants, since that falls with the grade that decides', async () => {
+  const { db, campaign, graders, lead, reader } = scenario
+  await db
+    .insertInto('rule')
+    .values({
+      campaign_id: campaign.id,
+      version: 2,
+      method: 'reliability',
+      grades_wanted: 6,
+      least_grades: 2,
+      parameters: JSON.stringify({ falseConfirmed: 0.001, missedLens: 0.05 }),
+      created_by: lead.id,
+      created_at: '2026-01-02T00:00:00.000Z',
+    })
+    .execute()
+  const [settled] = [await addImagedCandidate(db, campaign, 'A'), await addImagedCandidate(db, campaign, 'B')]
+  for (const grader of graders.slice(0, 2)) await addGrade(settled, grader.id)
+  await db.updateTable('candidate').set({ settled: 1 }).where('id', '=', settled).execute()
+  for (const person of [lead, reader]) {
+    expect((await overviewOf(person)).grading).toEqual({ given: 2, wanted: 8, waiting: 1 })
+    expect((await listCampaigns(db, person))[0].looks).toEqual({ given: 2, wanted: 8, waiting: 1 })
+  }
+  expect((await overviewOf(graders[0])).grading).toEqual({ given: 2, wanted: null, waiting: null })
+  expect((await listCampaigns(db, graders[0]))[0].looks).toEqual({ given: 2, wanted: null, waiting: null })
 })
 
 it('is closed to people outside the campaign', async () => {
@@ -103,7 +130,13 @@ it('lists to each person their own campaigns only, with counts as far as the rol
   const id = await addImagedCandidate(db, campaign, 'A')
   await db.updateTable('candidate').set({ state: 'confirmed' }).where('id', '=', id).execute()
   const [forGrader] = await listCampaigns(db, graders[0])
-  expect(forGrader).toMatchObject({ slug: campaign.slug, candidates: 1, gradesWanted: 3, left: 1, confirmed: null })
+  expect(forGrader).toMatchObject({
+    slug: campaign.slug,
+    candidates: 1,
+    looks: { wanted: 3 },
+    left: 1,
+    confirmed: null,
+  })
   const [forReader] = await listCampaigns(db, reader)
   expect(forReader).toMatchObject({ role: 'viewer', left: null, confirmed: 1, split: 0 })
   expect((await listCampaigns(db, stranger)).map(({ slug }) => slug)).toEqual([scenario.otherCampaign.slug])

@@ -4,7 +4,7 @@ import { countCandidates, type CampaignCounts } from '@/db/queries/campaigns'
 import { listOpenInvitations } from '@/db/queries/invitations'
 import { countUnfinishedJobs } from '@/db/queries/jobs'
 import { findNewestRun } from '@/db/queries/consensus'
-import { countRefusedFiles, listNewestConfirmed, sumLooks, type LookSums } from '@/db/queries/overview'
+import { countRefusedFiles, listNewestConfirmed, sumLooks } from '@/db/queries/overview'
 import { listMembers } from '@/db/queries/people'
 import { countGradedCandidates, countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
@@ -14,14 +14,15 @@ import { isoTime } from '@/lib/platform/clock'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { askerOf } from './asker'
 import { candidateScope } from './candidate-scope'
+import { looksTold, type LooksTold } from './looks-told'
 import { ruleInForce, type RuleInForce } from './rule-in-force'
 
 export interface CampaignOverview {
   rule: RuleInForce
   candidates: number
   imaged: number
-  /** Looks given and wanted at all imaged candidates together. */
-  grading: LookSums
+  /** Looks at all imaged candidates together. */
+  grading: LooksTold
   /** For those who grade: what is left for them and what they have looked at. */
   mine: { left: number; lookedAt: number } | null
   /** For leads and viewers. A grader's own judgement must not know how the others' turned out. */
@@ -79,7 +80,7 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     rule,
     candidates: counts.candidates,
     imaged: counts.imaged,
-    grading,
+    grading: looksTold(grading, role, rule.method),
     mine: role === 'viewer' ? null : { left, lookedAt },
     outcome,
     upkeep,

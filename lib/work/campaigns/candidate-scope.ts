@@ -11,7 +11,8 @@ import type { CampaignPermit } from '@/lib/work/people/permission'
  * | grader | listed like any other, without a mark | of those that they have judged |
  *
  * A grader must not learn from a list which candidates are calibration: so there they are among the others, and before the
- * grader's own grade all look alike. Afterwards one looks like a candidate that has no verdict yet, which it never gets.
+ * grader's own grade all look alike. Afterwards one looks like a candidate that nothing has decided yet: graders are told no verdict
+ * that leaves one open, and of a calibration stamp no grade but their own and those of people who wrote in its discussion.
  */
 export function candidateScope(permit: CampaignPermit<'read'>): CandidateScope {
   return {

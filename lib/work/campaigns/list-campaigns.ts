@@ -3,11 +3,13 @@ import type { Kysely } from 'kysely'
 import { listCampaigns as listCampaignRows } from '@/db/queries/campaigns'
 import { countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
+import type { Rule } from '@/db/schema/campaigns'
 import type { Role } from '@/db/schema/people'
 import { isoTime } from '@/lib/platform/clock'
 import { signInNeeded } from '@/lib/platform/problems/problem'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { askerOf } from './asker'
+import { looksTold, type LooksTold } from './looks-told'
 
 export interface CampaignCard {
   slug: string
@@ -17,9 +19,8 @@ export interface CampaignCard {
   role: Role
   candidates: number
   imaged: number
-  gradesGiven: number
-  /** Looks wanted altogether; a candidate that a ruling has decided wants no more than it has. */
-  gradesWanted: number
+  method: Rule['method']
+  looks: LooksTold
   /** Left for this person to look at; null for a viewer, who grades nothing. */
   left: number | null
   /** null for a grader, who learns states candidate by candidate after grading. */
@@ -33,19 +34,20 @@ export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Prom
   const now = isoTime()
   const rows = await listCampaignRows(db, viewer.id)
   return Promise.all(
-    rows.map(async ({ id, usesSheet, method, gradesWanted, looksGiven, looksWanted, confirmed, split, ...row }) => ({
-      ...row,
-      gradesGiven: looksGiven,
-      gradesWanted: looksWanted,
-      left:
-        row.role === 'viewer'
-          ? null
-          : await countOpenCandidates(
-              db,
-              askerOf({ id, uses_sheet: usesSheet }, viewer.id, { method, gradesWanted }, now),
-            ),
-      confirmed: row.role === 'grader' ? null : confirmed,
-      split: row.role === 'grader' ? null : split,
-    })),
+    rows.map(
+      async ({ id, usesSheet, gradesWanted, looksGiven, looksWanted, looksWaiting, confirmed, split, ...row }) => ({
+        ...row,
+        looks: looksTold({ given: looksGiven, wanted: looksWanted, waiting: looksWaiting }, row.role, row.method),
+        left:
+          row.role === 'viewer'
+            ? null
+            : await countOpenCandidates(
+                db,
+                askerOf({ id, uses_sheet: usesSheet }, viewer.id, { method: row.method, gradesWanted }, now),
+              ),
+        confirmed: row.role === 'grader' ? null : confirmed,
+        split: row.role === 'grader' ? null : split,
+      }),
+    ),
   )
 }
