@@ -42,7 +42,7 @@ export function VerdictArithmetic({ verdict, grades }: { verdict: EvidenceVerdic
   if (!verdict) {
     return (
       <p className="text-small text-mute">
-        No verdict yet. The consensus gives one when it runs, as soon as there is a grade.
+        No verdict has decided it yet. The consensus does when it runs, once the grades are enough.
       </p>
     )
   }

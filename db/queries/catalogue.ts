@@ -157,8 +157,9 @@ export async function listCandidateSlice(
   const { order, descending } = slice
   const column = ORDER_COLUMN[order]
   const judged = JUDGED_ORDERS.includes(order) && scope.judgedBy !== null
-  // Where a value is withheld, its place in the order must not give it away.
-  const key = judged ? sql`case when ${isRevealed(scope)} then ${column} end` : column
+  // Where a value is withheld, its place in the order must not give it away. A grader is told no verdict that leaves it open.
+  const told = VERDICT_ORDERS.includes(order) ? sql<SqlBool>`verdict.outcome <> 'open'` : sql<SqlBool>`true`
+  const key = judged ? sql`case when ${isRevealed(scope)} and ${told} then ${column} end` : column
   const ids = await filtered(db, scope, slice.filter)
     .select('candidate.id')
     .$if(VERDICT_ORDERS.includes(order), (query) =>

@@ -51,27 +51,6 @@ export async function listCountedAnswers(
     .execute()
 }
 
-/** How many of each letter count, by candidate; candidates without an answer are not in the map. */
-export async function countVotes(
-  db: Kysely<DB>,
-  candidateIds: readonly number[],
-): Promise<Map<number, Record<GradeLetter, number>>> {
-  const votes = new Map<number, Record<GradeLetter, number>>()
-  if (candidateIds.length === 0) return votes
-  const rows = await countedAnswers(db)
-    .select(['grade.candidate_id as candidateId', 'grade.grade'])
-    .select((e) => e.fn.countAll<number>().as('n'))
-    .where(sql<boolean>`grade.candidate_id in (select value from json_each(${JSON.stringify(candidateIds)}))`)
-    .groupBy(['grade.candidate_id', 'grade.grade'])
-    .execute()
-  for (const row of rows) {
-    const counts = votes.get(row.candidateId) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }
-    counts[row.grade] = row.n
-    votes.set(row.candidateId, counts)
-  }
-  return votes
-}
-
 /** The newest rows of a moment: together with a rule they fix what a run reads. */
 export interface RunBounds {
   newestGradeId: number

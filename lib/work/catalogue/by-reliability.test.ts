@@ -98,3 +98,36 @@ it('sorts the table by lens probability, and not so that a grader learns what th
     null,
   ])
 })
+
+it('tells a grader what is decided without anybody’s weight, and of what is open and of a stamp alike nothing', async () => {
+  const { db, campaign, graders } = scenario
+  const stamp = await addImagedCandidate(db, campaign, 'stamp')
+  await db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', stamp).execute()
+  await giveGrades(db, campaign, stamp, graders, 'AABB')
+  const one = await addImagedCandidate(db, campaign, 'one look')
+  await giveGrades(db, campaign, one, graders, 'A')
+  await run()
+  const rowsFor = async (viewer: Scenario['lead'], order: 'id' | 'mean' | 'probability' = 'id') => {
+    const input = { filter: {}, order, descending: true, page: 0, pageSize: 20 }
+    return (await candidateTable(db, await scenario.permit(viewer, 'read'), input)).rows
+  }
+  const named = async (viewer: Scenario['lead'], name: string) =>
+    (await rowsFor(viewer)).find((row) => row.name === name)
+  expect((await named(scenario.lead, 'one look'))?.verdict?.outcome).toBe('open')
+  expect((await named(scenario.lead, 'not'))?.verdict?.reason).toMatch(/speaks/)
+  const grader = graders[0]
+  expect((await named(grader, 'not'))?.verdict).toMatchObject({
+    outcome: 'set aside',
+    reason: expect.stringMatching(/^Set aside: /),
+  })
+  expect(JSON.stringify(await rowsFor(grader))).not.toMatch(/speaks|odds/)
+  const told = async (name: string) => {
+    const row = await named(grader, name)
+    return { state: row?.state, verdict: row?.verdict, votes: row?.votes, designation: row?.designation }
+  }
+  expect(await told('stamp')).toEqual(await told('one look'))
+  for (const order of ['mean', 'probability'] as const) {
+    const names = (await rowsFor(grader, order)).map(({ name }) => name)
+    expect(names.slice(-3).sort()).toEqual(['fresh', 'one look', 'stamp'])
+  }
+})

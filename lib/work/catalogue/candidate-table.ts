@@ -7,7 +7,7 @@ import {
   type CandidateFilter,
   type CandidateOrder,
 } from '@/db/queries/catalogue'
-import { countVotes } from '@/db/queries/consensus'
+import { countVotes } from '@/db/queries/verdicts'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
 import { noteShown } from '@/lib/work/grading/may-reveal'
@@ -66,7 +66,7 @@ export async function candidateTable(
   const listed = await asListed(db, permit, rows)
   const ids = listed.map((row) => row.id)
   const open = listed.filter((row) => !row.withheld).map((row) => row.id)
-  const votes = await countVotes(db, open)
+  const votes = await countVotes(db, open, permit.role === 'grader' ? permit.viewer.id : undefined)
   const counts = (id: number) => votes.get(id) ?? { A: 0, B: 0, C: 0, N: 0, U: 0 }
   const told = listed.filter((row) => saysJudgement(row) || (!row.withheld && hasOthers(counts(row.id))))
   await noteShown(

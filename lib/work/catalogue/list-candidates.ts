@@ -5,6 +5,7 @@ import type { DB } from '@/db/schema'
 import type { CandidateState } from '@/db/schema/intake'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { reasonInShort } from '@/lib/work/rulings/reason-in-short'
 import { readCursor, writeCursor } from './candidate-cursor'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 
@@ -91,7 +92,7 @@ export async function asListed(
     const forLead = permit.role === 'lead' ? { score: row.score, calibration: row.calibration === 1 } : {}
     const judged = withheld
       ? { state: null, verdict: null, designation: null }
-      : { state: row.state, verdict: verdictOf(row), designation: row.designation }
+      : { state: row.state, verdict: verdictOf(row, permit), designation: row.designation }
     return { id, name, raDeg, decDeg, ...judged, withheld, ...forLead }
   })
 }
@@ -101,9 +102,13 @@ export function saysJudgement({ state, verdict }: ListedCandidate): boolean {
   return verdict !== null || (state !== null && state !== 'open')
 }
 
-function verdictOf(row: CandidateRow): ListedVerdict | null {
+/**
+ * Graders are told what is decided, and of the reason nothing of what each grade weighs: those are other people's numbers. What is
+ * still open looks to them as a calibration stamp does, of which nothing is ever decided.
+ */
+function verdictOf(row: CandidateRow, { role }: CampaignPermit<'read'>): ListedVerdict | null {
   const { outcome, grades, cannotJudge, mean, spread, probability, reason } = row
-  if (outcome === null) return null
+  if (outcome === null || (role === 'grader' && outcome === 'open')) return null
   return {
     outcome,
     grades: grades ?? 0,
@@ -111,6 +116,6 @@ function verdictOf(row: CandidateRow): ListedVerdict | null {
     mean,
     spread,
     probability,
-    reason: reason ?? '',
+    reason: role === 'grader' ? reasonInShort(reason ?? '') : (reason ?? ''),
   }
 }

@@ -1,7 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { toJson } from '@/db/schema/values'
-import { giveGrade } from '@/lib/work/consensus/_give-grade'
+import { giveGrade, giveGrades } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
+import { MessageInput } from '@/lib/work/discussion/message-input'
+import { postMessage } from '@/lib/work/discussion/post-message'
 import { addImagedCandidate, makeScenario } from '@/tests/_support/scenario'
 import { candidateEvidence } from './candidate-evidence'
 import { candidateName } from './candidate-name'
@@ -72,6 +74,23 @@ describe('the evidence of a candidate', () => {
       expect(JSON.stringify(evidence)).not.toContain('not a lens')
       expect(evidence.judgement?.calibration).toBe(reads === leadReads)
     }
+  })
+
+  it('of a calibration candidate shows a grader their own grade, and those of people who wrote in its discussion', async () => {
+    const { db, campaign, graders, permit, leadReads } = await gradedCase()
+    const known = await addImagedCandidate(db, campaign, 'known')
+    await db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', known).execute()
+    await giveGrades(db, campaign, known, graders, 'ABBBN')
+    const reads = await permit(graders[0], 'read')
+    const seen = async (by = reads) => (await candidateEvidence(db, by, known)).judgement
+    expect(await seen()).toMatchObject({
+      state: 'open',
+      votes: { A: 1, B: 0, C: 0, N: 0, U: 0 },
+      grades: [{ own: true }],
+    })
+    expect((await seen(leadReads))?.grades).toHaveLength(5)
+    await postMessage(db, await permit(graders[4], 'grade'), known, MessageInput.parse({ body: 'A disk.' }))
+    expect((await seen())?.grades.map(({ by, grade }) => `${by} ${grade}`)).toEqual(['G02 A', 'G06 N'])
   })
 
   it('of a calibration candidate is not there for a viewer, neither by its number nor by turning pages', async () => {

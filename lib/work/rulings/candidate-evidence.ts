@@ -150,10 +150,11 @@ export async function candidateEvidence(
 
 async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candidate: Candidate): Promise<Judgement> {
   const named = permit.role === 'lead'
+  const onlyOwn = permit.role === 'grader'
   const by = (person: { name: string; pseudonym: string | null }) =>
     named ? person.name : (person.pseudonym ?? 'a member')
   const [answers, verdictRows, rulingRows, changes, designation, informed] = await Promise.all([
-    listAnswersOf(db, candidate.id),
+    listAnswersOf(db, candidate.id, { graderId: onlyOwn ? permit.viewer.id : undefined }),
     listVerdictsOf(db, candidate.id),
     listRulingsOf(db, candidate.id),
     listStateChanges(db, candidate.id),
@@ -175,8 +176,10 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     return ruling ? describeRuling(ruling) : 'A ruling.'
   }
   const newest = rulings.at(0)
-  const verdict = verdicts.at(-1)
-  const reader = { id: permit.viewer.id, named, onlyOwn: permit.role === 'grader' }
+  const given = verdicts.at(-1)
+  // What is still open looks to a grader as a calibration stamp does, of which nothing is ever decided.
+  const verdict = onlyOwn && given?.outcome === 'open' ? undefined : given
+  const reader = { id: permit.viewer.id, named, onlyOwn }
   const { state_cause: cause, state_cause_id: causeId } = candidate
   return {
     state: candidate.state,

@@ -55,6 +55,12 @@ describe('a verdict by reliability as a sum', () => {
     expect(JSON.stringify(why)).not.toMatch(/G02|G04/)
   })
 
+  it('tells a grader of themselves only that they are left out', () => {
+    const answers = [answer('A', 'G02', { leftOut: true }), answer('B', 'G03', { own: true, leftOut: true })]
+    expect(explain([...answers, answer('N', 'G04'), answer('N', 'G05')], true).leftOut).toEqual(['G03'])
+    expect(JSON.stringify(explain([answers[0], answer('A', 'G03', { own: true })], true))).not.toContain('G02')
+  })
+
   it('says from what share of lenses and of others a weight comes', () => {
     expect(explain([answer('A', 'curlew')]).rates).toEqual([
       { by: 'curlew', grade: 'A', ofLenses: 0.4, ofOthers: 0.05, learnedFrom: 120, calibration: 20 },

@@ -63,7 +63,7 @@ export interface ReliabilityWhy {
   confirm: { probability: number; logOdds: number }
   setAside: { probability: number; logOdds: number }
   cannotJudge: number
-  /** Who gave a grade that does not count because they are left out. */
+  /** Who gave a grade that does not count because they are left out; a grader learns it of themselves only. */
   leftOut: string[]
   /** What would have changed the verdict, in sentences. */
   changes: string[]
@@ -86,7 +86,7 @@ export interface WhyBasis {
   lensShare: number
 }
 
-/** @param onlyOwn for a grader: others' numbers go into one step, and their rates are left out. */
+/** @param onlyOwn for a grader: others' numbers go into one step, and their rates are left out. At least two others, or it is theirs. */
 export function explainReliability(
   { rule, answers, lensShare }: WhyBasis,
   { onlyOwn }: { onlyOwn: boolean },
@@ -113,7 +113,7 @@ export function explainReliability(
     confirm: { probability: interval.confirm, logOdds: logOddsOf(interval.confirm) },
     setAside: { probability: interval.setAside, logOdds: logOddsOf(interval.setAside) },
     cannotJudge: decision.cannotJudge,
-    leftOut: answers.filter(({ leftOut }) => leftOut).map(({ by }) => by),
+    leftOut: answers.filter(({ leftOut, own }) => leftOut && (own || !onlyOwn)).map(({ by }) => by),
   }
 }
 
@@ -129,7 +129,7 @@ function stepsOf(graded: readonly Weighed[], start: number, onlyOwn: boolean): W
   const parts = shown.map(({ by, own, grade, weight }) => ({ label: by, own, grade: grade as Grade | null, weight }))
   if (others.length > 0) {
     const weight = others.reduce((sum, one) => sum + one.weight, 0)
-    const label = others.length === 1 ? 'The other grade' : `The other ${others.length} grades together`
+    const label = `The other ${others.length} grades together`
     parts.push({ label, own: false, grade: null, weight })
   }
   let at = start

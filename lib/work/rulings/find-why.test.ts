@@ -1,5 +1,5 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
-import { giveGrades } from '@/lib/work/consensus/_give-grade'
+import { giveGrade, giveGrades } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
@@ -7,7 +7,7 @@ import type { Viewer } from '@/lib/work/people/viewer'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { candidateEvidence } from './candidate-evidence'
 
-const RULE = { method: 'reliability' as const, mostLooks: 4, leastGrades: 2, falseConfirmed: 0.01, missedLens: 0.1 }
+const RULE = { method: 'reliability' as const, gradesWanted: 4, leastGrades: 2, falseConfirmed: 0.01, missedLens: 0.1 }
 let scenario: Scenario
 let id: number
 beforeEach(async () => {
@@ -45,12 +45,45 @@ describe('the sum of a verdict by reliability', () => {
   })
 
   it('has pseudonyms for a viewer, and for a grader no number but their own, in the reason neither', async () => {
+    await giveGrade(scenario.db, scenario.campaign, id, scenario.graders[3], 'N')
+    await runConsensus(scenario.db, await scenario.permit(scenario.lead, 'lead'))
     const viewer = await whyFor(scenario.reader)
-    expect(viewer.why.steps.map(({ label }) => label).sort()).toEqual(['G02', 'G03', 'G04'])
+    expect(viewer.why.steps.map(({ label }) => label).sort()).toEqual(['G02', 'G03', 'G04', 'G05'])
     const grader = await whyFor(scenario.graders[0])
-    expect(grader.why.steps.map(({ label }) => label).sort()).toEqual(['G02', 'The other 2 grades together'])
-    expect(JSON.stringify(grader.judgement)).not.toMatch(/odds (times|divided).*G0[34]|G0[34] speaks/)
+    expect(grader.why.steps.map(({ label }) => label).sort()).toEqual(['G02', 'The other 3 grades together'])
+    expect(JSON.stringify(grader.judgement)).not.toMatch(/odds (times|divided).*G0[345]|G0[345] speaks/)
     expect(grader.judgement.stateReason).not.toMatch(/speaks|Before any grade/)
+  })
+
+  it('is not told to a grader while it leaves the candidate open', async () => {
+    expect((await whyFor(scenario.lead)).verdict.outcome).toBe('open')
+    const { judgement } = await candidateEvidence(scenario.db, await scenario.permit(scenario.graders[0], 'read'), id)
+    expect(judgement).toMatchObject({ state: 'open', verdict: null, why: null })
+    expect(judgement?.grades).toHaveLength(3)
+  })
+
+  it('tells a grader no step where it would be the number of the one other person', async () => {
+    const { db, campaign, lead, graders } = scenario
+    const pair = await addImagedCandidate(db, campaign, 'pair')
+    await giveGrades(db, campaign, pair, graders, 'NN')
+    await runConsensus(db, await scenario.permit(lead, 'lead'))
+    const seen = async (viewer: Viewer) =>
+      (await candidateEvidence(db, await scenario.permit(viewer, 'read'), pair)).judgement
+    expect((await seen(lead))?.why?.steps).toHaveLength(2)
+    expect(await seen(graders[0])).toMatchObject({ why: null, verdict: { outcome: 'set aside' } })
+  })
+
+  it('tells a grader nothing of what came since: with one more grade it would be that person’s number', async () => {
+    const { db, campaign, lead, graders } = scenario
+    const case3 = await addImagedCandidate(db, campaign, 'case 3')
+    await giveGrades(db, campaign, case3, graders, 'NNN')
+    await runConsensus(db, await scenario.permit(lead, 'lead'))
+    const permit = await scenario.permit(graders[3], 'grade')
+    await recordGrade(db, permit, case3, GradeInput.parse({ grade: 'N' }))
+    const seen = async (viewer: Viewer) =>
+      (await candidateEvidence(db, await scenario.permit(viewer, 'read'), case3)).judgement?.why
+    expect((await seen(lead))?.since).toMatchObject({ newGrades: 1 })
+    expect(await seen(graders[0])).toMatchObject({ outcome: 'set aside', since: null })
   })
 
   it('tells apart what came since: the verdict stays, the live estimate moves', async () => {

@@ -5,6 +5,7 @@ import { findEstimateOf, findRunOfVerdict } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
+import { isGrade } from '@/lib/science/agreement/grades'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { explainReliability, type ReliabilityWhy, type WeighedBy, type WhySince } from './explain-reliability'
 import { verdictChanges } from './verdict-changes'
@@ -19,7 +20,8 @@ interface Reader {
 
 /**
  * Why the verdict is as it is, from the model and the answers of the run that gave it; null by the mean method. What has come
- * since is the live estimate: it is told apart, because only a run or a ruling changes a state.
+ * since is the live estimate: it is told apart, because only a run or a ruling changes a state. A grader is told neither where one
+ * other grade is all there is beside their own, nor what came since: the difference would be that person's number.
  */
 export async function findWhy(
   db: Kysely<DB>,
@@ -31,7 +33,7 @@ export async function findWhy(
   const run = await findRunOfVerdict(db, verdict.id)
   if (!run?.model) return null
   const model = fromJson(run.model)
-  const rows = await listAnswersOf(db, candidateId, run.newestGradeId)
+  const rows = await listAnswersOf(db, candidateId, { upTo: run.newestGradeId })
   const answers = rows.map((row): WeighedBy => {
     const grader = model.graders.find(({ personId }) => personId === row.personId)
     return {
@@ -46,10 +48,11 @@ export async function findWhy(
   })
   const basis = { rule: verdict.rule, lensShare: model.lensShare }
   const counted = answers.filter(({ leftOut }) => !leftOut).map(({ by, ...answer }) => ({ ...answer, grader: by }))
+  if (reader.onlyOwn && counted.filter(({ own, grade }) => !own && isGrade(grade)).length === 1) return null
   return {
     ...explainReliability({ ...basis, answers }, reader),
     changes: verdictChanges({ ...basis, answers: counted }, model.newcomer, (at) => !reader.onlyOwn || counted[at].own),
-    since: await sinceRun(db, candidateId, run, model),
+    since: reader.onlyOwn ? null : await sinceRun(db, candidateId, run, model),
   }
 }
 

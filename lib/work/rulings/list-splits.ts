@@ -1,7 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { countCandidates } from '@/db/queries/campaigns'
-import { countVotes } from '@/db/queries/consensus'
+import { countVotes } from '@/db/queries/verdicts'
 import { listRecentRulings, listSplits, type RecentRuling } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
