@@ -1,3 +1,4 @@
+import { counted } from '@/components/campaigns/in-words'
 import type { Interval } from '@/lib/science/agreement/binomial-intervals'
 import type { RuleTrial } from '@/lib/work/consensus/try-rule'
 
@@ -59,13 +60,15 @@ export function QualityTable({ trial, lensShare }: { trial: RuleTrial; lensShare
         {stamps > 0 && quality ? (
           <>
             Confirmed of the stamps: {counts.lensesConfirmed} of {counts.lenses} lenses, {counts.nonLensesConfirmed} of{' '}
-            {counts.nonLenses} that are none{waiting > 0 ? `; ${waiting} still have too few grades` : ''}. Intervals
+            {counts.nonLenses} that are none
+            {waiting > 0 ? `; ${waiting} ${waiting === 1 ? 'wants' : 'want'} more looks` : ''}. Each is stopped at the
+            look at which the rule would stop a candidate, and weighed without what it taught of its graders. Intervals
             hold 95 %. Purity is for {share(lensShare)} lenses among the candidates.
           </>
         ) : stamps + waiting > 0 ? (
           <>
-            {waiting} calibration stamps have fewer grades than the rule’s least. Have them graded, and the left column
-            fills.
+            None of {counted(waiting, 'calibration stamp')} has the looks at which this rule would stop. Have them
+            graded, and the left column fills.
           </>
         ) : (
           <>

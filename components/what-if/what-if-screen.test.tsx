@@ -40,6 +40,7 @@ function body(graded = true) {
         squaredPoints: Float64Array.from(many([13, 5, 0])),
         evidence: Float64Array.of(5, 0.5, -6),
       },
+      stampLooks: { start: Int32Array.of(0), grade: new Uint8Array(0), weight: new Float64Array(0) },
     }),
   )
 }

@@ -1,7 +1,9 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
+import type { GradeLetter } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
 import { among, inCampaign } from './by-ids'
+import { countedAnswers } from './consensus'
 
 export interface CandidateForWhatIf {
   id: number
@@ -29,6 +31,37 @@ export async function listForWhatIf(
       .limit(page.limit)
       .execute()
   )
+}
+
+export interface StampAnswer {
+  candidateId: number
+  personId: number
+  grade: GradeLetter
+}
+
+/**
+ * The answers that count at calibration stamps, by stamp in the order in which people gave them: a correction stands where the
+ * answer was first given.
+ */
+export async function listStampAnswers(
+  db: Kysely<DB>,
+  bounds: { campaignId: number; newestGradeId: number; newestCandidateId: number },
+): Promise<StampAnswer[]> {
+  return countedAnswers(db, bounds.newestGradeId)
+    .innerJoin('candidate', 'candidate.id', 'grade.candidate_id')
+    .select(['grade.candidate_id as candidateId', 'grade.person_id as personId', 'grade.grade'])
+    .where('candidate.campaign_id', '=', bounds.campaignId)
+    .where('candidate.truth', 'is not', null)
+    .where('candidate.id', '<=', bounds.newestCandidateId)
+    .orderBy('grade.candidate_id')
+    .orderBy(({ selectFrom }) =>
+      selectFrom('grade as given')
+        .select((e) => e.fn.min('given.id').as('id'))
+        .whereRef('given.candidate_id', '=', 'grade.candidate_id')
+        .whereRef('given.person_id', '=', 'grade.person_id')
+        .where('given.occasion', 'in', ['first', 'asked']),
+    )
+    .execute()
 }
 
 /** Grades of the campaign that came after this one, corrections among them. */

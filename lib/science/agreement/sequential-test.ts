@@ -84,7 +84,7 @@ export function errorRatesFor(goal: { completeness: number; purity: number }, le
 }
 
 /** Evidence this near to a boundary has reached it, so that the order in which weights were summed decides nothing. */
-const SUM_SLACK = 1e-9
+export const SUM_SLACK = 1e-9
 
 /** Which boundary the evidence has reached; null between them, and for NaN. */
 export function reachedBoundary(evidence: number, { upper, lower }: Boundaries): 'confirm' | 'set aside' | null {

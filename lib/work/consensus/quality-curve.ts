@@ -1,10 +1,12 @@
 /**
  * Completeness and purity of the catalogue as the threshold that confirms moves, all other thresholds of the rule held: what
- * the lens probabilities promise, and what the calibration stamps say where there are any.
+ * the lens probabilities promise, and what the calibration stamps say where there are any, each stopped where the rule would have
+ * stopped it.
  */
 import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import { purityOf } from '@/lib/science/agreement/rule-quality'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
+import { replayStamps } from './try-rule'
 import type { WhatIfColumns } from './what-if-columns'
 
 export interface CurvePoint {
@@ -27,52 +29,94 @@ const STEP = { mean: 0.01, reliability: 0.05 } as const
 /** Evidence beyond this counts as this: odds of e^25. */
 const MOST_EVIDENCE = 25
 
-/** Cost O(rows + thresholds). */
+/** Cost O(rows + looks of stamps + thresholds). */
 export function qualityCurve(columns: WhatIfColumns, rule: RuleInput): QualityCurve {
-  const { candidates, truth, tallies, probabilities, about } = columns
-  if (about.lensShare === null) return { promised: [], stamps: [] }
+  if (columns.about.lensShare === null) return { promised: [], stamps: [] }
   const [low, high] = rule.method === 'mean' ? [0, 3] : [-MOST_EVIDENCE, MOST_EVIDENCE]
-  const step = STEP[rule.method]
-  const bins = Math.round((high - low) / step) + 1
-  const [count, lenses, stampLenses, stampOthers] = Array.from({ length: 4 }, () => new Float64Array(bins))
-  const total = { lenses: 0, stampLenses: 0, stampOthers: 0 }
-  for (let row = 0; row < truth.length; row++) {
-    const isStamp = row >= candidates
-    if (!isStamp) total.lenses += probabilities[row]
+  const scale = { low, high, step: STEP[rule.method] }
+  return { promised: promisedCurve(columns, rule, scale), stamps: stampCurve(columns, rule, scale) }
+}
+
+interface Scale {
+  low: number
+  high: number
+  step: number
+}
+
+const binsOf = ({ low, high, step }: Scale) => Math.round((high - low) / step) + 1
+
+/** 1e-9 of a step: a sum that ends on a threshold has reached it. */
+const binOf = (score: number, { low, high, step }: Scale) =>
+  Math.floor((Math.min(high, Math.max(low, score)) - low) / step + 1e-9)
+
+function promisedCurve(
+  { candidates, tallies, probabilities }: WhatIfColumns,
+  rule: RuleInput,
+  scale: Scale,
+): CurvePoint[] {
+  const bins = binsOf(scale)
+  const count = new Float64Array(bins)
+  const lenses = new Float64Array(bins)
+  let all = 0
+  for (let row = 0; row < candidates; row++) {
+    all += probabilities[row]
     const n = tallies.grades[row]
-    if (n < rule.leastGrades) continue
-    if (isStamp && truth[row] === LENS) total.stampLenses += 1
-    if (isStamp && truth[row] === NOT_A_LENS) total.stampOthers += 1
-    const score = scoreOf(tallies, rule, row, n)
+    const score = n < rule.leastGrades ? NaN : scoreOf(tallies, rule, row, n)
     if (Number.isNaN(score)) continue
-    // 1e-9 of a step: a sum that ends on a threshold has reached it.
-    const bin = Math.floor((Math.min(high, Math.max(low, score)) - low) / step + 1e-9)
-    if (!isStamp) {
-      count[bin] += 1
-      lenses[bin] += probabilities[row]
-    } else if (truth[row] === LENS) stampLenses[bin] += 1
-    else stampOthers[bin] += 1
+    const bin = binOf(score, scale)
+    count[bin] += 1
+    lenses[bin] += probabilities[row]
   }
-  const curve: QualityCurve = { promised: [], stamps: [] }
-  const above = { count: 0, lenses: 0, stampLenses: 0, stampOthers: 0 }
+  const curve: CurvePoint[] = []
+  let confirmed = 0
+  let right = 0
+  for (let bin = bins - 1; bin >= 0 && all > 0; bin--) {
+    if (count[bin] === 0) continue
+    confirmed += count[bin]
+    right += lenses[bin]
+    const threshold = scale.low + bin * scale.step
+    curve.push({ threshold, confirmed, completeness: right / all, purity: right / confirmed })
+  }
+  return curve
+}
+
+/** A stamp that wants more looks counts from the threshold on at which those that it has confirm it. */
+function stampCurve(columns: WhatIfColumns, rule: RuleInput, scale: Scale): CurvePoint[] {
+  const { candidates, truth, about } = columns
+  const { reach, ended } = replayStamps(columns, rule)
+  const bins = binsOf(scale)
+  const kinds = [LENS, NOT_A_LENS].map((kind) => ({
+    kind,
+    /** at or above the threshold */
+    confirmed: 0,
+    /** of them those that want more looks */
+    ahead: 0,
+    ended: 0,
+    inBin: new Float64Array(bins),
+    aheadInBin: new Float64Array(bins),
+  }))
+  for (let stamp = 0; stamp < ended.length; stamp++) {
+    const of = kinds.find(({ kind }) => kind === truth[candidates + stamp])
+    if (!of) continue
+    of.ended += ended[stamp]
+    if (reach[stamp] === -Infinity) continue
+    const bin = binOf(reach[stamp], scale)
+    of.inBin[bin] += 1
+    of.aheadInBin[bin] += 1 - ended[stamp]
+  }
+  const curve: CurvePoint[] = []
+  const [lenses, others] = kinds
   for (let bin = bins - 1; bin >= 0; bin--) {
-    const threshold = low + bin * step
-    above.count += count[bin]
-    above.lenses += lenses[bin]
-    above.stampLenses += stampLenses[bin]
-    above.stampOthers += stampOthers[bin]
-    if (count[bin] > 0 && total.lenses > 0) {
-      curve.promised.push({
-        threshold,
-        confirmed: above.count,
-        completeness: above.lenses / total.lenses,
-        purity: above.lenses / above.count,
-      })
+    for (const of of kinds) {
+      of.confirmed += of.inBin[bin]
+      of.ahead += of.aheadInBin[bin]
     }
-    if (stampLenses[bin] + stampOthers[bin] === 0 || total.stampLenses === 0 || total.stampOthers === 0) continue
-    const completeness = above.stampLenses / total.stampLenses
-    const purity = purityOf(completeness, above.stampOthers / total.stampOthers, about.lensShare)
-    if (purity !== null) curve.stamps.push({ threshold, confirmed: above.count, completeness, purity })
+    if (lenses.inBin[bin] + others.inBin[bin] === 0) continue
+    if (lenses.ended + lenses.ahead === 0 || others.ended + others.ahead === 0) continue
+    const completeness = lenses.confirmed / (lenses.ended + lenses.ahead)
+    const purity = purityOf(completeness, others.confirmed / (others.ended + others.ahead), about.lensShare as number)
+    const threshold = scale.low + bin * scale.step
+    if (purity !== null) curve.push({ threshold, confirmed: lenses.confirmed + others.confirmed, completeness, purity })
   }
   return curve
 }

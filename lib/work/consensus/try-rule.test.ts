@@ -16,6 +16,20 @@ interface Row {
   state?: (typeof OUTCOMES)[number]
   ruled?: boolean
   truth?: number
+  /** of a calibration stamp: what each of its looks weighs; 0 when left out */
+  weights?: number[]
+}
+
+/** Looks of the stamps among the rows: 3 points are an A. */
+function stampLooksOf(rows: Row[]): WhatIfColumns['stampLooks'] {
+  const stamps = rows.filter(({ truth }) => truth !== undefined)
+  const start = [0]
+  for (const { points } of stamps) start.push(start.at(-1)! + points.length)
+  return {
+    start: Int32Array.from(start),
+    grade: Uint8Array.from(stamps.flatMap(({ points }) => points.map((one) => 3 - one))),
+    weight: Float64Array.from(stamps.flatMap(({ points, weights }) => points.map((_, at) => weights?.[at] ?? 0))),
+  }
 }
 
 /** Rows as the server sends them, through the coding that they travel in. */
@@ -45,6 +59,7 @@ function columnsFor(rows: Row[], about: Partial<WhatIfColumns['about']> = {}): W
         squaredPoints: Float64Array.from(rows, ({ points }) => sum(points, (x) => x * x)),
         evidence: Float64Array.from(rows, ({ evidence = 0 }) => evidence),
       },
+      stampLooks: stampLooksOf(rows),
     }),
   )
 }
@@ -81,15 +96,15 @@ describe('tryRule', () => {
     expect(trial.then).toEqual({ open: 2, split: 0, confirmed: 1, 'set aside': 1 })
   })
 
-  it('measures completeness and purity on calibration stamps with enough grades, and counts none of them as candidates', () => {
+  it('measures completeness and purity on calibration stamps that have their looks, and counts none of them as candidates', () => {
     const trial = tryRule(
       columnsFor([
         { points: [3, 3], evidence: 3 },
+        { points: [3, 3, 2, 2], truth: LENS },
+        { points: [1, 0, 0, 0], truth: LENS },
+        { points: [0, 0, 0, 0], truth: NOT_A_LENS },
+        { points: [3, 2, 3, 2], truth: NOT_A_LENS },
         { points: [3, 3], truth: LENS },
-        { points: [1, 0], truth: LENS },
-        { points: [0, 0], truth: NOT_A_LENS },
-        { points: [3, 2], truth: NOT_A_LENS },
-        { points: [3], truth: LENS },
       ]),
       MEAN,
     )
@@ -99,6 +114,24 @@ describe('tryRule', () => {
     expect(trial.stamps.quality?.completeness.value).toBe(0.5)
     // Bayes' rule with a share of lenses of 0.1: 0.1 * 0.5 / (0.1 * 0.5 + 0.9 * 0.5).
     expect(trial.stamps.quality?.purity.value).toBeCloseTo(0.1, 12)
+  })
+
+  it('stops a stamp where it would stop a candidate, however many looked at the stamp after that', () => {
+    // Boundaries 6.857 and -2.995. The third look sets it aside; all twelve together would confirm it: -3.3 + 9 * 1.2 = 7.5.
+    const late = [-1.1, -1.1, -1.1, ...Array<number>(9).fill(1.2)]
+    const points = late.map((weight) => (weight < 0 ? 1 : 3))
+    const rule = RuleInput.parse({ method: 'reliability', gradesWanted: 12, leastGrades: 2 })
+    const trial = tryRule(columnsFor([{ points, weights: late, evidence: 7.5, truth: LENS }]), rule)
+    expect(trial.stamps.counts).toMatchObject({ lenses: 1, lensesConfirmed: 0 })
+    // And the mean of the first four, 1.5 points, stays between, where that of all twelve is 2.5.
+    expect(tryRule(columnsFor([{ points, truth: LENS }]), MEAN).stamps.counts).toMatchObject({ lensesConfirmed: 0 })
+  })
+
+  it('counts a stamp between the boundaries as waiting while looks are to come, and as not confirmed after the most', () => {
+    const between = columnsFor([{ points: [3, 3, 3], weights: [2, 2, 2], evidence: 6, truth: LENS }])
+    const rule = (gradesWanted: number) => RuleInput.parse({ method: 'reliability', gradesWanted, leastGrades: 2 })
+    expect(tryRule(between, rule(4)).stamps).toMatchObject({ counts: { lenses: 0 }, waiting: 1, quality: null })
+    expect(tryRule(between, rule(3)).stamps).toMatchObject({ counts: { lenses: 1, lensesConfirmed: 0 }, waiting: 0 })
   })
 
   it('promises nothing where no reliabilities are known', () => {
@@ -119,8 +152,11 @@ describe('qualityCurve', () => {
     { points: [2, 2], evidence: 2 },
     { points: [1, 1], evidence: -1 },
     { points: [0, 0], evidence: -5 },
-    { points: [3, 3], truth: LENS },
-    { points: [0, 0], truth: NOT_A_LENS },
+    { points: [3, 3, 3, 3], weights: [2, 2, 2, 2], truth: LENS },
+    { points: [2, 2, 3, 3], weights: [1, 1, 2, -1], truth: LENS },
+    { points: [3], weights: [8], truth: LENS },
+    { points: [0, 0, 0, 0], weights: [-2, -2, 9, 9], truth: NOT_A_LENS },
+    { points: [3, 0, 3, 3], weights: [3, -1, 2, 1], truth: NOT_A_LENS },
   ])
 
   it('agrees with the rule tried at each of its thresholds', () => {
@@ -143,7 +179,26 @@ describe('qualityCurve', () => {
     )
     expect(promised.map(({ purity }) => purity)).toEqual(promised.map(({ purity }) => purity).toSorted((a, b) => b - a))
     expect(promised.at(-1)).toMatchObject({ completeness: 1, confirmed: 4 })
-    expect(stamps).toHaveLength(1)
+    expect(stamps.map(({ completeness }) => completeness)).toEqual(
+      stamps.map(({ completeness }) => completeness).toSorted((a, b) => a - b),
+    )
+  })
+
+  it('agrees on stamps with the rule tried at each of its thresholds, those that wait left out alike', () => {
+    const missedLens = 0.05
+    for (const gradesWanted of [4, 10]) {
+      const rule: RuleInput = { method: 'reliability', gradesWanted, leastGrades: 1, falseConfirmed: 1e-9, missedLens }
+      const { stamps } = qualityCurve(columns, rule)
+      expect(stamps.length).toBeGreaterThan(1)
+      for (const { threshold, completeness, purity } of stamps) {
+        // Wald's upper boundary solved for the rate; a hair more, for the step of the curve.
+        const falseConfirmed = (1 - missedLens) * Math.exp(-threshold) * (1 + 1e-9)
+        if (falseConfirmed >= 0.5) continue
+        const { quality } = tryRule(columns, { ...rule, falseConfirmed }).stamps
+        expect(quality?.completeness.value).toBeCloseTo(completeness, 12)
+        expect(quality?.purity.value).toBeCloseTo(purity, 12)
+      }
+    }
   })
 })
 
@@ -153,7 +208,7 @@ describe('the columns as they travel', () => {
       const columns = columnsFor(
         [
           { points: [3, 2, 0], evidence: 0.1, state: 'split' },
-          { points: [], truth: LENS },
+          { points: [3, 0, 1], truth: LENS, weights: [0.5, -1.5, 0.25] },
         ],
         {
           graders,
@@ -166,6 +221,9 @@ describe('the columns as they travel', () => {
       expect(columns.tallies.evidence[0]).toBe(0.1)
       expect(columns.tallies.squaredPoints[0]).toBe(13)
       expect(columns.probabilities[1]).toBeCloseTo(0.1, 12)
+      expect([...columns.stampLooks.start]).toEqual([0, 3])
+      expect([...columns.stampLooks.grade]).toEqual([0, 3, 2])
+      expect([...columns.stampLooks.weight]).toEqual([0.5, -1.5, 0.25])
     }
   })
 

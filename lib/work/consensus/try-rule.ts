@@ -1,14 +1,16 @@
 /** What a rule would make of all candidates, beside what they are now: for thresholds that are being tried. */
-import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
+import { LENS } from '@/lib/science/agreement/lens-model'
 import { meanRuleProblems, type Outcome } from '@/lib/science/agreement/mean-rule'
 import { OUTCOMES, outcomesByMean, outcomesByReliability } from '@/lib/science/agreement/outcomes-at-once'
 import { reliabilityRuleProblems } from '@/lib/science/agreement/reliability-rule'
+import { replayByMean, replayByReliability, type ReplayedLooks } from '@/lib/science/agreement/replay-looks'
 import {
   promisedQuality,
   ruleQuality,
   type CalibrationCounts,
   type RuleQuality,
 } from '@/lib/science/agreement/rule-quality'
+import { SUM_SLACK, waldBoundaries } from '@/lib/science/agreement/sequential-test'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import type { WhatIfColumns } from './what-if-columns'
 
@@ -36,9 +38,9 @@ export interface RuleTrial {
 }
 
 export interface StampQuality {
-  /** of the calibration stamps with at least the rule's least number of grades */
+  /** of the calibration stamps that the rule would have stopped by now, each judged as of the look at which it would have */
   counts: CalibrationCounts
-  /** calibration stamps with fewer grades, which tell nothing yet */
+  /** calibration stamps that want more looks, which tell nothing yet */
   waiting: number
   /** null without a stamp that tells anything, or where the share of lenses is not known */
   quality: RuleQuality | null
@@ -91,7 +93,7 @@ export function tryRule(columns: WhatIfColumns, rule: RuleInput): RuleTrial {
     changed,
     moves: moves.sort((a, b) => b.rows.length - a.rows.length),
     heldByRuling,
-    stamps: stampQuality(columns, rule.leastGrades, (row) => outcomes[row] === CONFIRMED),
+    stamps: stampQuality(columns, rule),
     promised:
       about.lensShare === null
         ? null
@@ -104,23 +106,31 @@ function named(counts: number[]): Record<Outcome, number> {
   return { open, split, confirmed, 'set aside': setAside }
 }
 
-export function stampQuality(
-  { candidates, truth, tallies, about }: WhatIfColumns,
-  leastGrades: number,
-  isConfirmed: (row: number) => boolean,
-): StampQuality {
+/** How far each calibration stamp came under the rule, look by look. @throws RangeError with the first of ruleProblems. */
+export function replayStamps({ stampLooks }: WhatIfColumns, rule: RuleInput): ReplayedLooks {
+  return rule.method === 'mean'
+    ? replayByMean(stampLooks, rule)
+    : replayByReliability(stampLooks, { ...rule, mostLooks: rule.gradesWanted })
+}
+
+/** Threshold from which the rule confirms: mean points, or evidence. */
+export const confirmsFrom = (rule: RuleInput): number =>
+  rule.method === 'mean' ? rule.confirmMean : waldBoundaries(rule).upper - SUM_SLACK
+
+function stampQuality(columns: WhatIfColumns, rule: RuleInput): StampQuality {
+  const { candidates, truth, about } = columns
+  const { reach, ended } = replayStamps(columns, rule)
+  const threshold = confirmsFrom(rule)
   const counts: CalibrationCounts = { lenses: 0, lensesConfirmed: 0, nonLenses: 0, nonLensesConfirmed: 0 }
   let waiting = 0
-  for (let row = candidates; row < truth.length; row++) {
-    if (tallies.grades[row] < leastGrades) {
+  for (let stamp = 0; stamp < ended.length; stamp++) {
+    const confirmed = reach[stamp] >= threshold ? 1 : 0
+    if (!confirmed && !ended[stamp]) {
       waiting += 1
-      continue
-    }
-    const confirmed = isConfirmed(row) ? 1 : 0
-    if (truth[row] === LENS) {
+    } else if (truth[candidates + stamp] === LENS) {
       counts.lenses += 1
       counts.lensesConfirmed += confirmed
-    } else if (truth[row] === NOT_A_LENS) {
+    } else {
       counts.nonLenses += 1
       counts.nonLensesConfirmed += confirmed
     }

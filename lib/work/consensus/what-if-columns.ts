@@ -4,6 +4,7 @@
  */
 import type { CandidateTallies } from '@/lib/science/agreement/outcomes-at-once'
 import { logOddsOf, probabilityOf } from '@/lib/science/agreement/posterior'
+import type { LookSeries } from '@/lib/science/agreement/replay-looks'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 
 export interface WhatIfAbout {
@@ -31,6 +32,8 @@ export interface WhatIfColumns {
   /** LENS, NOT_A_LENS or UNKNOWN_TRUTH */
   truth: Int8Array
   tallies: CandidateTallies
+  /** looks of the calibration stamps, the one in row `candidates` first: each weighs as if the stamp had taught nothing of its grader */
+  stampLooks: LookSeries
   /** of a lens; the share of lenses for a row without grades, NaN where that is not known */
   probabilities: Float64Array
 }
@@ -43,23 +46,41 @@ export function withProbabilities(rows: WhatIfRows): WhatIfColumns {
   return { ...rows, probabilities: rows.tallies.evidence.map((evidence) => probabilityOf(prior + evidence)) }
 }
 
+interface Head {
+  about: WhatIfAbout
+  candidates: number
+  rows: number
+  /** of calibration stamps, together */
+  looks: number
+}
+
 /** Columns in the order in which they travel: those of 8 bytes first, so that each begins at a multiple of its own width. */
-function columnsOf({ ids, state, ruled, truth, tallies }: WhatIfRows) {
+function columnsOf({ ids, state, ruled, truth, tallies, stampLooks }: WhatIfRows) {
   const { evidence, looks, grades, points, squaredPoints } = tallies
-  return [evidence, ids, looks, grades, Uint16Array.from(points), Uint16Array.from(squaredPoints), state, ruled, truth]
+  return [
+    ...[evidence, stampLooks.weight],
+    ...[ids, stampLooks.start],
+    ...[looks, grades, Uint16Array.from(points), Uint16Array.from(squaredPoints)],
+    ...[state, ruled, truth, stampLooks.grade],
+  ]
 }
 
 const HEAD_ALIGNMENT = 8
 const BYTES_A_ROW = 8 + 4 + 4 * 2 + 3
+const BYTES_A_LOOK = 8 + 1
+const BYTES_A_STAMP = 4
+
+const lengthOf = ({ candidates, rows, looks }: Head): number =>
+  rows * BYTES_A_ROW + looks * BYTES_A_LOOK + (rows - candidates + 1) * BYTES_A_STAMP
 
 export function encodeWhatIf(rows: WhatIfRows): Uint8Array<ArrayBuffer> {
-  const head = new TextEncoder().encode(
-    JSON.stringify({ about: rows.about, candidates: rows.candidates, rows: rows.ids.length }),
-  )
-  const from = HEAD_ALIGNMENT * Math.ceil((4 + head.length) / HEAD_ALIGNMENT)
-  const bytes = new Uint8Array(from + rows.ids.length * BYTES_A_ROW)
-  new DataView(bytes.buffer).setUint32(0, head.length, true)
-  bytes.set(head, 4)
+  const { about, candidates, ids, stampLooks } = rows
+  const head: Head = { about, candidates, rows: ids.length, looks: stampLooks.grade.length }
+  const text = new TextEncoder().encode(JSON.stringify(head))
+  const from = HEAD_ALIGNMENT * Math.ceil((4 + text.length) / HEAD_ALIGNMENT)
+  const bytes = new Uint8Array(from + lengthOf(head))
+  new DataView(bytes.buffer).setUint32(0, text.length, true)
+  bytes.set(text, 4)
   let at = from
   for (const column of columnsOf(rows)) {
     bytes.set(new Uint8Array(column.buffer, column.byteOffset, column.byteLength), at)
@@ -74,20 +95,18 @@ export function decodeWhatIf(bytes: Uint8Array<ArrayBuffer>): WhatIfColumns {
   const length = new DataView(bytes.buffer, bytes.byteOffset).getUint32(0, true)
   const from = HEAD_ALIGNMENT * Math.ceil((4 + length) / HEAD_ALIGNMENT)
   if (bytes.length < from) throw new RangeError('The numbers did not arrive whole.')
-  const head = JSON.parse(new TextDecoder().decode(bytes.subarray(4, 4 + length))) as {
-    about: WhatIfAbout
-    candidates: number
-    rows: number
-  }
-  if (bytes.length !== from + head.rows * BYTES_A_ROW) throw new RangeError('The numbers did not arrive whole.')
+  const head = JSON.parse(new TextDecoder().decode(bytes.subarray(4, 4 + length))) as Head
+  if (bytes.length !== from + lengthOf(head)) throw new RangeError('The numbers did not arrive whole.')
   let at = from
-  const next = (width: number): ArrayBuffer => {
+  const next = (width: number, entries = head.rows): ArrayBuffer => {
     const start = at
-    at += width * head.rows
+    at += width * entries
     return bytes.buffer.slice(bytes.byteOffset + start, bytes.byteOffset + at)
   }
   const evidence = new Float64Array(next(8))
+  const weight = new Float64Array(next(8, head.looks))
   const ids = new Int32Array(next(4))
+  const start = new Int32Array(next(4, head.rows - head.candidates + 1))
   const [looks, grades, points, squaredPoints] = [2, 2, 2, 2].map((width) => new Uint16Array(next(width)))
   return withProbabilities({
     about: head.about,
@@ -103,5 +122,6 @@ export function decodeWhatIf(bytes: Uint8Array<ArrayBuffer>): WhatIfColumns {
       points: Float64Array.from(points),
       squaredPoints: Float64Array.from(squaredPoints),
     },
+    stampLooks: { start, weight, grade: new Uint8Array(next(1, head.looks)) },
   })
 }

@@ -50,6 +50,31 @@ describe('readWhatIf', () => {
     })
   })
 
+  it('holds the looks of calibration stamps in the order given, a correction where its answer was first given', async () => {
+    const { db, campaign, graders } = scenario
+    await giveGrade(db, campaign, ids[4], graders[2], 'U')
+    const first = await db
+      .selectFrom('grade')
+      .select('id')
+      .where('candidate_id', '=', ids[3])
+      .where('person_id', '=', graders[0].id)
+      .executeTakeFirstOrThrow()
+    await giveGrade(db, campaign, ids[3], graders[0], 'C', { replaces: first.id })
+    const { stampLooks } = await readWhatIf(db, await lead())
+    expect([...stampLooks.start]).toEqual([0, 2, 5])
+    // C and B at the first stamp; N, N and 'cannot judge', which weighs nothing, at the other.
+    expect([...stampLooks.grade]).toEqual([2, 1, 3, 3, 255])
+    expect(stampLooks.weight[4]).toBe(0)
+  })
+
+  it('weighs a look at a stamp without what that stamp taught of its grader', async () => {
+    const { db, campaign } = scenario
+    await giveGrade(db, campaign, ids[3], scenario.lead, 'A')
+    const { stampLooks } = await readWhatIf(db, await lead())
+    // Of somebody who graded nothing else the pseudo-counts are left: A for 4 of 10 lenses and for 0.5 of 10 others.
+    expect(stampLooks.weight[2]).toBeCloseTo(Math.log(8), 12)
+  })
+
   it('foretells what a run makes of a changed rule, candidate by candidate', async () => {
     const { db, campaign } = scenario
     const tried = RuleInput.parse({

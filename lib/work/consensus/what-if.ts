@@ -3,7 +3,13 @@ import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { listThumbnails } from '@/db/queries/catalogue'
 import { findNewestRun, listLeftOutPeople, newestInput } from '@/db/queries/consensus'
-import { countGradesAfter, listForWhatIf, listNamesOf, type CandidateForWhatIf } from '@/db/queries/what-if'
+import {
+  countGradesAfter,
+  listForWhatIf,
+  listNamesOf,
+  listStampAnswers,
+  type CandidateForWhatIf,
+} from '@/db/queries/what-if'
 import type { DB } from '@/db/schema'
 import type { RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
@@ -18,6 +24,7 @@ import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
 import { fitModel } from './fit-model'
 import { InputDigest } from './input-digest'
 import { readGrades } from './read-grades'
+import { stampLooksOf } from './stamp-looks'
 import type { WhatIfAbout, WhatIfRows } from './what-if-columns'
 
 /** States read before other work of the process gets its turn. */
@@ -33,10 +40,11 @@ export async function readWhatIf(db: Kysely<DB>, permit: CampaignPermit<'lead'>)
   const run = await findNewestRun(db, campaignId)
   const newest = await newestInput(db, campaignId)
   const leftOut = await listLeftOutPeople(db, campaignId, newest.newestLeftOutId)
+  const out = new Set(leftOut)
   const grades = await readGrades(
     db,
     { campaignId, ...newest },
-    { leftOut: new Set(leftOut), withCalibration: true, digest: new InputDigest(rule, leftOut) },
+    { leftOut: out, withCalibration: true, digest: new InputDigest(rule, leftOut) },
   )
   const known = run?.model ? fromJson(run.model) : null
   const model = known ?? (await fitModel(grades, leftOut))
@@ -44,10 +52,11 @@ export async function readWhatIf(db: Kysely<DB>, permit: CampaignPermit<'lead'>)
   const states = await readStates(db, campaignId, newest.newestCandidateId)
   const { truth, ids } = grades
   const rows = Array.from(ids.keys())
-  const order = [
-    ...rows.filter((row) => truth[row] === UNKNOWN_TRUTH),
-    ...rows.filter((row) => truth[row] !== UNKNOWN_TRUTH),
-  ]
+  const candidates = rows.filter((row) => truth[row] === UNKNOWN_TRUTH)
+  const stamps = rows.filter((row) => truth[row] !== UNKNOWN_TRUTH)
+  const order = [...candidates, ...stamps]
+  const answers = await listStampAnswers(db, { campaignId, ...newest })
+  const counted = answers.filter(({ personId }) => !out.has(personId))
   const reliabilities = reliabilitiesOf(known && run, grades.table.cell.length > 0)
   return {
     about: {
@@ -58,12 +67,13 @@ export async function readWhatIf(db: Kysely<DB>, permit: CampaignPermit<'lead'>)
       graders: grades.people.length,
       leftOut: leftOut.length,
     },
-    candidates: rows.reduce((sum, row) => sum + (truth[row] === UNKNOWN_TRUTH ? 1 : 0), 0),
+    candidates: candidates.length,
     ids: Int32Array.from(order, (row) => ids[row]),
     state: Uint8Array.from(order, (row) => OUTCOMES.indexOf(states.get(ids[row])?.state ?? 'open')),
     ruled: Uint8Array.from(order, (row) => states.get(ids[row])?.ruled ?? 0),
     truth: Int8Array.from(order, (row) => truth[row]),
     tallies: inOrder(tallies, order),
+    stampLooks: stampLooksOf(grades, { lensShare: model.lensShare, evidence: tallies.evidence }, stamps, counted),
   }
 }
 
