@@ -3,6 +3,7 @@ import { EmptyState } from '@/components/ui/notice'
 import { ButtonLink } from '@/components/ui/button'
 import type { CampaignCard } from '@/lib/work/campaigns/list-campaigns'
 import { counted, percent } from './in-words'
+import { asksInWords } from './next-steps'
 import { ProgressBar } from '@/components/ui/progress-bar'
 
 /** What matters most about this campaign to this person, in one line. */
@@ -11,6 +12,7 @@ function waiting(card: CampaignCard): string {
   if (card.role === 'lead' && card.split) return `${counted(card.split, 'split')} to settle`
   if (card.role === 'viewer') return `${counted(card.confirmed ?? 0, 'confirmed candidate')}`
   if (card.imaged === 0) return 'The files are being read.'
+  if (card.asked) return asksInWords(card.asked)
   return card.left ? `${counted(card.left, 'candidate')} left for you` : 'Nothing is left for you to grade.'
 }
 

@@ -7,6 +7,10 @@ export interface Step {
   action: string
 }
 
+/** `2 looks are asked of you` */
+export const asksInWords = (asked: number): string =>
+  `${counted(asked, 'look')} ${asked === 1 ? 'is' : 'are'} asked of you`
+
 /** What a lead can do next, the most useful first. */
 export function leadSteps(overview: CampaignOverview, home: string): Step[] {
   const { outcome, upkeep, mine } = overview
@@ -24,6 +28,11 @@ export function leadSteps(overview: CampaignOverview, home: string): Step[] {
         href: `${home}/people`,
         action: 'Invite people',
       },
+    mine.asked > 0 && {
+      text: `${asksInWords(mine.asked)} at the bench.`,
+      href: `${home}/bench`,
+      action: 'To the bench',
+    },
     counts.split > 0 && {
       text: `${counted(counts.split, 'split')} ${counts.split === 1 ? 'needs' : 'need'} a ruling.`,
       href: `${home}/splits`,

@@ -4,7 +4,7 @@ import { EmptyState, Notice, VisualGradeCaution } from '@/components/ui/notice'
 import type { CampaignOverview } from '@/lib/work/campaigns/campaign-overview'
 import { Agreement } from './agreement'
 import { counted } from './in-words'
-import { leadSteps } from './next-steps'
+import { asksInWords, leadSteps } from './next-steps'
 import { NewestTray, type TrayStamp } from './newest-tray'
 import { GradingProgress, NextSteps, Part } from './overview-parts'
 import { PageHead } from './page-head'
@@ -100,9 +100,18 @@ export function LeadOverview(props: Props) {
   )
 }
 
+function ToTheBench({ campaignPath }: Pick<Props, 'campaignPath'>) {
+  return (
+    <ButtonLink href={`${campaignPath}/bench`} tone="lamp" className="min-h-12 px-8 text-body">
+      Sit down at the bench
+    </ButtonLink>
+  )
+}
+
 export function GraderOverview({ overview, about, campaignPath }: Props) {
   const left = overview.mine?.left ?? 0
   const lookedAt = overview.mine?.lookedAt ?? 0
+  const asked = overview.mine?.asked ?? 0
   return (
     <div className="mx-auto flex max-w-3xl flex-col gap-10 px-5 py-8 md:px-10">
       <p className="text-mute">{about}</p>
@@ -114,13 +123,24 @@ export function GraderOverview({ overview, about, campaignPath }: Props) {
               {left === 1 ? 'candidate is' : 'candidates are'} left for you
             </span>
           </h1>
-          <ButtonLink href={`${campaignPath}/bench`} tone="lamp" className="min-h-12 px-8 text-body">
-            Sit down at the bench
-          </ButtonLink>
+          {asked > 0 ? (
+            <p>
+              {asksInWords(asked)}; {asked === 1 ? 'it comes' : 'they come'} first.
+            </p>
+          ) : null}
+          <ToTheBench campaignPath={campaignPath} />
           <p className="max-w-md text-mute">
             One look at a time: letter keys grade, <span className="text-text">?</span> shows all keys. Leave whenever
             you like; every grade is kept as you give it.
           </p>
+        </div>
+      ) : asked > 0 ? (
+        <div className="flex flex-col items-start gap-5">
+          <h1 className="text-display font-semibold">{asksInWords(asked)}</h1>
+          <p className="max-w-md text-mute">
+            Somebody wants to know what you see there, though you have seen every candidate that still wanted a look.
+          </p>
+          <ToTheBench campaignPath={campaignPath} />
         </div>
       ) : (
         <div className="flex flex-col items-start gap-3">

@@ -1,4 +1,6 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
+import { insertAskedLook } from '@/db/queries/asked-looks'
+import { isoTime } from '@/lib/platform/clock'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { candidateTable } from '@/lib/work/catalogue/candidate-table'
 import { campaignOverview } from './campaign-overview'
@@ -47,8 +49,8 @@ it('counts looks given of wanted, and what is left for each person', async () =>
   for (const grader of graders.slice(0, 3)) await addGrade(first, grader.id)
   await addGrade(second, graders[0].id)
   expect((await overviewOf(scenario.lead)).grading).toEqual({ given: 4, wanted: 6, waiting: 1 })
-  expect((await overviewOf(graders[0])).mine).toEqual({ left: 0, lookedAt: 2 })
-  expect((await overviewOf(graders[1])).mine).toEqual({ left: 1, lookedAt: 1 })
+  expect((await overviewOf(graders[0])).mine).toEqual({ left: 0, lookedAt: 2, asked: 0 })
+  expect((await overviewOf(graders[1])).mine).toEqual({ left: 1, lookedAt: 1, asked: 0 })
 })
 
 it('wants no more looks at what a ruling has decided', async () => {
@@ -119,6 +121,19 @@ it('tells no grader how many looks the reliability method still wants, since tha
   }
   expect((await overviewOf(graders[0])).grading).toEqual({ given: 2, wanted: null, waiting: null })
   expect((await listCampaigns(db, graders[0]))[0].looks).toEqual({ given: 2, wanted: null, waiting: null })
+})
+
+it('tells a person of looks that are asked of them, and nobody else', async () => {
+  const { db, campaign, graders, lead, reader } = scenario
+  const id = await addImagedCandidate(db, campaign, 'A')
+  const now = isoTime()
+  const ask = { campaignId: campaign.id, candidateId: id, personId: graders[0].id, askedBy: lead.id, note: null, now }
+  await insertAskedLook(db, ask)
+  expect((await overviewOf(graders[0])).mine?.asked).toBe(1)
+  expect((await listCampaigns(db, graders[0]))[0].asked).toBe(1)
+  expect((await overviewOf(graders[1])).mine?.asked).toBe(0)
+  expect((await listCampaigns(db, graders[1]))[0].asked).toBe(0)
+  expect((await listCampaigns(db, reader))[0].asked).toBeNull()
 })
 
 it('is closed to people outside the campaign', async () => {

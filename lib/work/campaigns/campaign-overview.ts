@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { countAsks } from '@/db/queries/asked-looks'
 import { countCandidates, type CampaignCounts } from '@/db/queries/campaigns'
 import { listOpenInvitations } from '@/db/queries/invitations'
 import { countUnfinishedJobs } from '@/db/queries/jobs'
@@ -23,8 +24,8 @@ export interface CampaignOverview {
   imaged: number
   /** Looks at all imaged candidates together. */
   grading: LooksTold
-  /** For those who grade: what is left for them and what they have looked at. */
-  mine: { left: number; lookedAt: number } | null
+  /** For those who grade: what is left for them, what they have looked at, and looks that somebody asks of them. */
+  mine: { left: number; lookedAt: number; asked: number } | null
   /** For leads and viewers. A grader's own judgement must not know how the others' turned out. */
   outcome: {
     counts: CampaignCounts
@@ -69,10 +70,11 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     countCandidates(db, campaign.id, counted.withCalibration),
   ])
   const asker = askerOf(campaign, viewer.id, rule, isoTime())
-  const [grading, left, lookedAt, outcome, upkeep] = await Promise.all([
+  const [grading, left, lookedAt, asks, outcome, upkeep] = await Promise.all([
     sumLooks(db, counted, rule.gradesWanted),
     role === 'viewer' ? 0 : countOpenCandidates(db, asker),
     role === 'viewer' ? 0 : countGradedCandidates(db, campaign.id, viewer.id),
+    countAsks(db, { campaignId: campaign.id, personId: viewer.id }),
     role === 'grader' ? null : outcomeOf(db, campaign.id, counts),
     role === 'lead' ? upkeepOf(db, campaign.id) : null,
   ])
@@ -81,7 +83,7 @@ export async function campaignOverview(db: Kysely<DB>, permit: CampaignPermit<'r
     candidates: counts.candidates,
     imaged: counts.imaged,
     grading: looksTold(grading, role, rule.method),
-    mine: role === 'viewer' ? null : { left, lookedAt },
+    mine: role === 'viewer' ? null : { left, lookedAt, asked: asks.open },
     outcome,
     upkeep,
   }

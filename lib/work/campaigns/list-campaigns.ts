@@ -1,5 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
+import { countAsks } from '@/db/queries/asked-looks'
 import { listCampaigns as listCampaignRows } from '@/db/queries/campaigns'
 import { countOpenCandidates } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
@@ -23,6 +24,8 @@ export interface CampaignCard {
   looks: LooksTold
   /** Left for this person to look at; null for a viewer, who grades nothing. */
   left: number | null
+  /** Looks that somebody asks of this person; null for a viewer. */
+  asked: number | null
   /** null for a grader, who learns states candidate by candidate after grading. */
   confirmed: number | null
   split: number | null
@@ -45,6 +48,7 @@ export async function listCampaigns(db: Kysely<DB>, viewer: Viewer | null): Prom
                 db,
                 askerOf({ id, uses_sheet: usesSheet }, viewer.id, { method: row.method, gradesWanted }, now),
               ),
+        asked: row.role === 'viewer' ? null : (await countAsks(db, { campaignId: id, personId: viewer.id })).open,
         confirmed: row.role === 'grader' ? null : confirmed,
         split: row.role === 'grader' ? null : split,
       }),
