@@ -1,7 +1,7 @@
 import { ButtonLink } from '@/components/ui/button'
 import { ProgressBar } from '@/components/ui/progress-bar'
 import type { SheetCompleteness, SheetProgress } from '@/lib/work/sheet/sheet-progress'
-import { percent } from './in-words'
+import { counted, percent } from './in-words'
 import { Part } from './overview-parts'
 
 const many = (count: number) => count.toLocaleString('en')
@@ -35,7 +35,7 @@ export function FirstPassPart({
       {completeness ? (
         <p className="text-small text-mute">
           {interval
-            ? `Of ${many(completeness.lenses)} calibration stamps that are lenses it sent on ${many(completeness.sentOn)}: ${percent(completeness.sentOn, completeness.lenses)}, between ${Math.round(100 * interval.low)} and ${Math.round(100 * interval.high)} % (95 %, Wilson).`
+            ? `Of ${counted(completeness.lenses, 'known lens', 'known lenses')} among the calibration stamps it sent on ${many(completeness.sentOn)}: ${percent(completeness.sentOn, completeness.lenses)}, between ${Math.round(100 * interval.low)} and ${Math.round(100 * interval.high)} % (95 %, Wilson).`
             : 'What it misses is not known yet: no calibration stamp that is a lens has been passed over.'}
         </p>
       ) : null}

@@ -4,7 +4,7 @@
  */
 import { makeUid } from '@/components/bench/make-uid'
 import type { MarkInput } from '@/lib/work/sheet/mark-input'
-import type { SheetProgress } from '@/lib/work/sheet/sheet-progress'
+import type { PassersProgress } from '@/lib/work/sheet/sheet-progress'
 import { sendMarks, type SheetOwner } from './sheet-api'
 
 export interface OutboxState {
@@ -36,7 +36,7 @@ export class MarkOutbox {
 
   constructor(
     readonly owner: SheetOwner,
-    readonly onProgress: (progress: SheetProgress) => void,
+    readonly onProgress: (progress: PassersProgress) => void,
   ) {
     this.#prefix = `ringside:sheet:${owner.slug}:${owner.personId}:`
     for (const mark of this.#stored()) this.#kept.set(mark.id, mark)

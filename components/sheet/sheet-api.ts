@@ -3,7 +3,7 @@ import type { PERSON_HEADER } from '@/lib/work/people/person-header'
 import type { LentSheet } from '@/lib/work/sheet/lend-sheet'
 import type { MarkInput } from '@/lib/work/sheet/mark-input'
 import type { RecordedMarks } from '@/lib/work/sheet/record-marks'
-import type { SheetProgress } from '@/lib/work/sheet/sheet-progress'
+import type { PassersProgress } from '@/lib/work/sheet/sheet-progress'
 
 export interface SheetOwner {
   slug: string
@@ -33,12 +33,12 @@ async function answerOf<T>(asked: Promise<Response>): Promise<T> {
 }
 
 export const askSheet = (owner: SheetOwner, count: number) =>
-  answerOf<LentSheet & { progress: SheetProgress }>(
+  answerOf<LentSheet & { progress: PassersProgress }>(
     fetch(`${address(owner)}?count=${count}`, { cache: 'no-store', headers: whose(owner) }),
   )
 
 export const sendMarks = (owner: SheetOwner, marks: readonly MarkInput[]) =>
-  answerOf<RecordedMarks & { progress: SheetProgress }>(
+  answerOf<RecordedMarks & { progress: PassersProgress }>(
     fetch(address(owner), {
       method: 'POST',
       headers: { 'content-type': 'application/json', ...whose(owner) },

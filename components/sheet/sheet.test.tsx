@@ -32,11 +32,13 @@ const progress = () => {
   return { waiting: server.total - of('sent on') - of('dropped'), sentOn: of('sent on'), dropped: of('dropped') }
 }
 
+const shown = () => ({ toCome: progress().waiting, passedPercent: 50 })
+
 function lent(count: number) {
   const newest = new Map(server.marks.map(({ candidate, mark }) => [candidate, mark]))
   const ids = Array.from({ length: server.total }, (_, n) => n + 1)
   const left = ids.filter((id) => (newest.get(id) ?? 'taken back') === 'taken back')
-  return { stamps: left.slice(0, count).map(stampOf), until: '', progress: progress() }
+  return { stamps: left.slice(0, count).map(stampOf), until: '', progress: shown() }
 }
 
 beforeEach(() => {
@@ -51,12 +53,12 @@ beforeEach(() => {
       return Response.json({
         saved: [],
         refused: marks.map(({ id }) => ({ id, sentence: server.refuse })),
-        progress: progress(),
+        progress: shown(),
       })
     }
     const known = new Set(server.marks.map(({ id }) => id))
     server.marks.push(...marks.filter(({ id }) => !known.has(id)))
-    return Response.json({ saved: marks.map(({ id }) => id), refused: [], progress: progress() })
+    return Response.json({ saved: marks.map(({ id }) => id), refused: [], progress: shown() })
   })
 })
 afterEach(() => void vi.unstubAllGlobals())
@@ -74,7 +76,7 @@ describe('the sheet', () => {
     const { user } = open()
     expect(stamps()).toHaveLength(PAGE)
     await user.keyboard('{ArrowRight}{ArrowRight}s')
-    expect(stamps()[2]).toHaveFocus()
+    await waitFor(() => expect(stamps()[2]).toHaveFocus())
     expect(stamps()[2]).toHaveAttribute('aria-pressed', 'true')
     await waitFor(() => expect(newest(3)).toBe('sent on'))
     await user.keyboard('s')
@@ -85,7 +87,9 @@ describe('the sheet', () => {
   it('sends on by a click or a touch, and by Space on the stamp in focus', async () => {
     const { user } = open()
     await user.click(stamps()[4])
-    await user.keyboard('{ArrowLeft} ')
+    await user.keyboard('{ArrowLeft}')
+    await waitFor(() => expect(stamps()[3]).toHaveFocus())
+    await user.keyboard(' ')
     await waitFor(() => expect([newest(5), newest(4)]).toEqual(['sent on', 'sent on']))
   })
 
@@ -98,7 +102,9 @@ describe('the sheet', () => {
     await user.keyboard('nn')
     expect(firstName()).toBe('SWS0061, send on')
     await waitFor(() => expect(progress()).toEqual({ waiting: 90, sentOn: 1, dropped: 59 }))
-    await waitFor(() => expect(screen.getByText(/wait,/)).toHaveTextContent('90 wait, 1 sent on, 59 dropped'))
+    await waitFor(() =>
+      expect(screen.getByText(/to come/)).toHaveTextContent('90 to come; 1 sent on and 59 dropped in this sitting'),
+    )
   })
 
   it('brings the page back with Z, what was sent on still sent on, and takes the drops back', async () => {
@@ -137,6 +143,7 @@ describe('the sheet', () => {
     expect(screen.queryByText(/go no further/), 'nothing is dropped from here').toBeNull()
     await user.keyboard('{Escape}')
     expect(screen.queryByRole('dialog')).toBeNull()
+    await waitFor(() => expect(stamps()[1]).toHaveFocus())
   })
 
   it('hears no letters while single keys are off, though buttons and arrows work', async () => {
@@ -145,7 +152,9 @@ describe('the sheet', () => {
     stamps()[0].focus()
     await user.keyboard('s')
     expect(server.marks).toEqual([])
-    await user.keyboard('{ArrowRight} ')
+    await user.keyboard('{ArrowRight}')
+    await waitFor(() => expect(stamps()[1]).toHaveFocus())
+    await user.keyboard(' ')
     await waitFor(() => expect(newest(2)).toBe('sent on'))
     await user.click(screen.getByRole('button', { name: /Drop the other 59/ }))
     await user.click(screen.getByRole('button', { name: /^Drop 59/ }))

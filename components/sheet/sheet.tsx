@@ -3,13 +3,12 @@
 import { ArrowLeft } from 'lucide-react'
 import Link from 'next/link'
 import { useCallback, useEffect, useEffectEvent, useRef, useState } from 'react'
-import { ProgressHairline } from '@/components/bench/progress-hairline'
 import { useKeySwitch } from '@/components/bench/use-key-switch'
 import { ButtonLink } from '@/components/ui/button'
 import { KeyNames } from '@/components/ui/key-names'
 import { Notice } from '@/components/ui/notice'
 import type { LentSheet } from '@/lib/work/sheet/lend-sheet'
-import type { SheetProgress } from '@/lib/work/sheet/sheet-progress'
+import type { PassersProgress } from '@/lib/work/sheet/sheet-progress'
 import { SheetFoot } from './sheet-foot'
 import { SheetGrid } from './sheet-grid'
 import { placeAfter, sheetCommandOf, type SheetCommand } from './sheet-keys'
@@ -29,7 +28,7 @@ export function Sheet({
   slug: string
   campaignName: string
   personId: number
-  first: LentSheet & { progress: SheetProgress }
+  first: LentSheet & { progress: PassersProgress }
 }) {
   const { session, progress, outbox, exhausted, run } = useSheet({ slug, personId }, first)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
@@ -41,9 +40,12 @@ export function Sheet({
   const lastDone = session.done.at(-1)
   const keyName = useCallback((key: string) => (keysOn || key === 'Esc' ? key : null), [keysOn])
 
+  const focusStamp = (place: number) =>
+    // A dialog that closes gives the focus back first.
+    setTimeout(() => grid.current?.querySelectorAll<HTMLButtonElement>('[aria-pressed]')[place]?.focus(), 0)
   const focusAt = (place: number) => {
     run({ do: 'go', to: place })
-    if (!session.enlarged) grid.current?.querySelectorAll<HTMLButtonElement>('[aria-pressed]')[place]?.focus()
+    if (!session.enlarged) focusStamp(place)
   }
   const obey = (command: SheetCommand) => {
     if (command.do === 'move') {
@@ -79,12 +81,20 @@ export function Sheet({
     if (around) around.scrollTop = 0
   }, [pages])
 
-  const passed = progress.sentOn + progress.dropped
+  const sittingSent = session.sent.size
+  const sittingDropped = session.done.reduce((sum, { dropped }) => sum + dropped.length, 0)
   return (
     <KeyNames.Provider value={keyName}>
       <div className="night fixed inset-0 flex flex-col bg-bench text-text [color-scheme:dark]">
-        <ProgressHairline given={passed} left={progress.waiting} />
-        <header className="flex flex-wrap items-center gap-x-4 px-3 pt-2 md:px-6">
+        <header className="relative flex flex-wrap items-center gap-x-4 px-3 pt-2 md:px-6">
+          <div
+            role="progressbar"
+            aria-label="Passed over"
+            aria-valuenow={progress.passedPercent}
+            className="absolute inset-x-0 top-0 h-[3px] bg-raise"
+          >
+            <div className="h-full bg-lamp" style={{ width: `${progress.passedPercent}%` }} />
+          </div>
           <Link
             prefetch={false}
             href={`/campaigns/${slug}`}
@@ -96,9 +106,9 @@ export function Sheet({
           </Link>
           <h1 className="text-small font-semibold">First pass</h1>
           <p className="text-note text-mute">
-            <span className="figures">{many(progress.waiting)}</span> wait,{' '}
-            <span className="figures">{many(progress.sentOn)}</span> sent on,{' '}
-            <span className="figures">{many(progress.dropped)}</span> dropped
+            <span className="figures">{many(progress.toCome)}</span> to come;{' '}
+            <span className="figures">{many(sittingSent)}</span> sent on and{' '}
+            <span className="figures">{many(sittingDropped)}</span> dropped in this sitting
           </p>
           <p role="status" className="text-note text-mute">
             {outbox.waiting > 0 ? `${outbox.waiting} marks on their way` : ''}
@@ -131,7 +141,7 @@ export function Sheet({
               }}
             />
           ) : (
-            <SheetEnd slug={slug} waiting={progress.waiting} exhausted={exhausted} />
+            <SheetEnd slug={slug} waiting={progress.toCome} exhausted={exhausted} />
           )}
         </main>
         <footer className="border-t border-line px-3 py-2 md:px-6">
@@ -165,7 +175,10 @@ export function Sheet({
             onView={setView}
             onToggle={() => run({ do: 'toggle', at: session.at })}
             onMove={(by) => obey({ do: 'move', by })}
-            onClose={() => run({ do: 'enlarge', on: false })}
+            onClose={() => {
+              run({ do: 'enlarge', on: false })
+              focusStamp(session.at)
+            }}
           />
         ) : null}
       </div>

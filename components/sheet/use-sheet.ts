@@ -2,7 +2,7 @@
 
 import { useCallback, useEffect, useReducer, useRef, useState, useSyncExternalStore } from 'react'
 import type { LentSheet } from '@/lib/work/sheet/lend-sheet'
-import type { SheetProgress } from '@/lib/work/sheet/sheet-progress'
+import type { PassersProgress } from '@/lib/work/sheet/sheet-progress'
 import { MarkOutbox, type OutboxState } from './mark-outbox'
 import { askSheet, giveBackSheet, type SheetOwner } from './sheet-api'
 import { emptySession, PAGE, pageOf, restOf, step, type SheetSession, type SheetStep } from './sheet-session'
@@ -13,7 +13,7 @@ const RENEW_MS = 5 * 60_000
 
 export interface SheetDesk {
   session: SheetSession
-  progress: SheetProgress
+  progress: PassersProgress
   outbox: OutboxState
   /** Everything that this person may pass over has come. */
   exhausted: boolean
@@ -22,7 +22,7 @@ export interface SheetDesk {
 
 const NOTHING: OutboxState = { waiting: 0, trouble: null, refused: null }
 
-export function useSheet(owner: SheetOwner, first: LentSheet & { progress: SheetProgress }): SheetDesk {
+export function useSheet(owner: SheetOwner, first: LentSheet & { progress: PassersProgress }): SheetDesk {
   const [session, dispatch] = useReducer(step, first, ({ stamps }) =>
     step(emptySession, { do: 'fill', stamps, passed: new Set() }),
   )

@@ -74,23 +74,38 @@ const unmarkedBy = ({ personId }: Passer) => sql<SqlBool>`coalesce((
   select mark from sheet_mark where sheet_mark.candidate_id = candidate.id and sheet_mark.person_id = ${personId}
     order by id desc limit 1), 'taken back') = 'taken back'`
 
-/** What waits for the first pass and lies on nobody's sheet, by index: in order of id, or the highest score first. */
+/** Along which index the first pass takes what waits: the highest score first, by the hash of ids from a place on, or a few by id. */
+export type PassOrder = 'score' | 'id' | { hashFrom: number }
+
+/** What waits for the first pass and lies on nobody's sheet. */
 export async function listToPass(
   db: Kysely<DB>,
   passer: Passer,
-  { byScore, limit }: { byScore: boolean; limit: number },
+  { order, limit }: { order: PassOrder; limit: number },
 ): Promise<{ id: number; name: string }[]> {
-  const index = byScore ? sql`candidate_queue_score` : sql`candidate_first_pass`
-  const order = byScore ? sql`ifnull(score, -1e308) desc, id` : sql`id`
-  const truth = byScore ? sql`+truth is null` : sql`truth is null`
+  const { campaignId } = passer
+  const hash = sql<number>`(id * 2654435769 & 4294967295)`
+  const [index, where, sorted] =
+    order === 'score'
+      ? [
+          sql`candidate_queue_score`,
+          sql`campaign_id = ${campaignId} and grades_given = 0 and truth is null`,
+          sql`ifnull(score, -1e308) desc, id`,
+        ]
+      : order === 'id'
+        ? [sql`candidate_first_pass`, sql`campaign_id = ${campaignId} and truth is null`, sql`id`]
+        : [
+            sql`candidate_queue_shuffled`,
+            sql`campaign_id + 0 = ${campaignId} and ${hash} >= ${order.hashFrom} and truth is null`,
+            hash,
+          ]
   const { rows } = await sql<{ id: number; name: string }>`
     select id, name from candidate indexed by ${index}
-    where campaign_id = ${passer.campaignId} and first_pass = 'waiting' and imaged_at is not null and ${truth}
-      ${byScore ? sql`and grades_given = 0` : sql``}
+    where ${where} and first_pass = 'waiting' and imaged_at is not null
       and not exists (select 1 from sheet_lease lease where lease.candidate_id = candidate.id)
       and not exists (select 1 from ruling where ruling.id = candidate.ruling_id
         and ruling.outcome in ('confirmed', 'set aside'))
-    order by ${order} limit ${limit}`.execute(db)
+    order by ${sorted} limit ${limit}`.execute(db)
   return rows
 }
 

@@ -3,6 +3,7 @@ import { randomInt } from 'node:crypto'
 import type { Kysely } from 'kysely'
 import {
   clearSheet,
+  countFirstPass,
   deleteExpiredSheetLeases,
   layOnSheet,
   listOnSheet,
@@ -75,8 +76,7 @@ export async function lendSheet(db: Kysely<DB>, permit: CampaignPermit<'grade'>,
 }
 
 async function drawMore(transaction: Kysely<DB>, campaign: Campaign, passer: Passer, wanted: number) {
-  const byScore = campaign.queue_order === 'score'
-  const waiting = await listToPass(transaction, passer, { byScore, limit: wanted })
+  const waiting = await drawWaiting(transaction, campaign, passer, wanted)
   const share = campaign.calibration_share
   const stamps = share > 0 && waiting.length > 0 ? await listStampsToPass(transaction, passer) : []
   const page: { id: number; name: string }[] = []
@@ -85,6 +85,27 @@ async function drawMore(transaction: Kysely<DB>, campaign: Campaign, passer: Pas
     page.push(isStamp ? stamps.splice(randomInt(stamps.length), 1)[0] : waiting.shift()!)
   }
   return page
+}
+
+/** From here on what waits is too sparse to be come upon by walking. */
+const FEW = 5000
+const HASHES = 2 ** 32
+
+/**
+ * From all over the campaign, else a calibration stamp would stand out by its name among neighbours in intake: by the order of a hash
+ * from a place that is drawn, or all that waits drawn from where it is little. Where the score comes first, that mixes them.
+ */
+async function drawWaiting(transaction: Kysely<DB>, campaign: Campaign, passer: Passer, limit: number) {
+  if (campaign.queue_order === 'score') return listToPass(transaction, passer, { order: 'score', limit })
+  if ((await countFirstPass(transaction, campaign.id)).waiting <= FEW) {
+    const all = await listToPass(transaction, passer, { order: 'id', limit: FEW })
+    return Array.from({ length: Math.min(limit, all.length) }, () => all.splice(randomInt(all.length), 1)[0])
+  }
+  const ahead = await listToPass(transaction, passer, { order: { hashFrom: randomInt(HASHES) }, limit })
+  if (ahead.length === limit) return ahead
+  const known = new Set(ahead.map(({ id }) => id))
+  const round = await listToPass(transaction, passer, { order: { hashFrom: 0 }, limit })
+  return [...ahead, ...round.filter(({ id }) => !known.has(id))].slice(0, limit)
 }
 
 /** Gives the person's sheet back, so that others get it at once. */

@@ -1,7 +1,8 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { countFirstPass, listLensMarks } from '@/db/queries/sheet'
+import { countFirstPass, listLensMarks, listStampsToPass } from '@/db/queries/sheet'
 import type { DB } from '@/db/schema'
+import { isoTime } from '@/lib/platform/clock'
 import { wilsonInterval, type Interval } from '@/lib/science/agreement/binomial-intervals'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { firstPassOf } from './first-pass'
@@ -24,6 +25,22 @@ export interface SheetCompleteness {
 export async function sheetProgress(db: Kysely<DB>, { campaign }: CampaignPermit<'read'>): Promise<SheetProgress> {
   const counts = await countFirstPass(db, campaign.id)
   return { waiting: counts.waiting, sentOn: counts['sent on'], dropped: counts.dropped }
+}
+
+/** For who makes the pass: whole per cent, and what is to come with calibration stamps among it, so that nothing tells their number. */
+export interface PassersProgress {
+  toCome: number
+  passedPercent: number
+}
+
+export async function passersProgress(db: Kysely<DB>, permit: CampaignPermit<'grade'>): Promise<PassersProgress> {
+  const { campaign, viewer } = permit
+  const { waiting, sentOn, dropped } = await sheetProgress(db, permit)
+  const unseen = await listStampsToPass(db, { campaignId: campaign.id, personId: viewer.id, now: isoTime() })
+  const share = campaign.calibration_share
+  const stamps = Math.min(unseen.length, Math.round((waiting * share) / (1 - share)))
+  const all = waiting + sentOn + dropped
+  return { toCome: waiting + stamps, passedPercent: all > 0 ? Math.floor((100 * (sentOn + dropped)) / all) : 0 }
 }
 
 /** What share of known lenses the first pass sends on, by the marks as they stand. Leads: it tells who saw what. */

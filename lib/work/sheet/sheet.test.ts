@@ -1,4 +1,6 @@
 import { beforeEach, describe, expect, it } from 'vitest'
+import { listToPass } from '@/db/queries/sheet'
+import { isoTime } from '@/lib/platform/clock'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
@@ -7,7 +9,7 @@ import { makeSheetScenario, type SheetScenario } from './_sheet-scenario'
 import { changeSheet, sheetSettings } from './change-sheet'
 import { lendSheet } from './lend-sheet'
 import { recordMarks } from './record-marks'
-import { sheetCompleteness, sheetProgress } from './sheet-progress'
+import { passersProgress, sheetCompleteness, sheetProgress } from './sheet-progress'
 
 let scenario: SheetScenario
 
@@ -185,6 +187,34 @@ describe('the page of a sheet', () => {
     const again = (await lendSheet(scenario.db, await grader(0), 30)).stamps.map(({ id }) => id)
     expect(known.slice(0, 3).some(({ id }) => again.includes(id))).toBe(false)
   })
+})
+
+describe('what who makes the pass is told', () => {
+  it('leaves the number of calibration stamps nothing to be subtracted from', async () => {
+    scenario = await makeSheetScenario(20, 10)
+    const permit = await grader(0)
+    expect(await passersProgress(scenario.db, permit)).toEqual({ toCome: 30, passedPercent: 0 })
+    await scenario.mark(scenario.graders[0], [0, 1, 2], 'dropped')
+    expect(await passersProgress(scenario.db, permit)).toEqual({ toCome: 27, passedPercent: 15 })
+  })
+
+  it('comes from all over the campaign, so that no name stands out', async () => {
+    scenario = await makeSheetScenario(200)
+    const { stamps } = await lendSheet(scenario.db, await grader(0), 20)
+    const places = stamps.map(({ id }) => scenario.ids.indexOf(id))
+    expect(places).not.toEqual(places.toSorted((a, b) => a - b))
+    expect(Math.max(...places) - Math.min(...places)).toBeGreaterThan(60)
+  })
+})
+
+it('walks a large campaign by the hash of ids, whose two parts hold all that waits', async () => {
+  scenario = await makeSheetScenario(40)
+  const passer = { campaignId: scenario.campaign.id, personId: scenario.graders[0].id, now: isoTime() }
+  const from = (hashFrom: number) => listToPass(scenario.db, passer, { order: { hashFrom }, limit: 100 })
+  const [ahead, all] = [await from(2 ** 31), await from(0)]
+  expect(ahead.length).toBeGreaterThan(10)
+  expect(all.slice(-ahead.length)).toEqual(ahead)
+  expect(all.map(({ id }) => id).toSorted((a, b) => a - b)).toEqual(scenario.ids)
 })
 
 describe('the settings of the first pass', () => {

@@ -4,7 +4,7 @@ import { ClosedSheet } from '@/components/sheet/closed-sheet'
 import { Sheet } from '@/components/sheet/sheet'
 import { lendSheet } from '@/lib/work/sheet/lend-sheet'
 import { mayPass } from '@/lib/work/sheet/may-pass'
-import { sheetProgress } from '@/lib/work/sheet/sheet-progress'
+import { passersProgress } from '@/lib/work/sheet/sheet-progress'
 
 export const metadata: Metadata = { title: 'First pass' }
 
@@ -26,6 +26,6 @@ export default async function SheetPage({ params }: PageProps<'/campaigns/[slug]
     )
   }
   const { permit } = await permitPage(slug, 'grade', '/sheet')
-  const first = { ...(await lendSheet(db, permit, FIRST_STAMPS)), progress: await sheetProgress(db, permit) }
+  const first = { ...(await lendSheet(db, permit, FIRST_STAMPS)), progress: await passersProgress(db, permit) }
   return <Sheet slug={slug} campaignName={campaign.name} personId={permit.viewer.id} first={first} />
 }

@@ -4,7 +4,7 @@ import { permitCampaign } from '@/lib/work/people/permission'
 import { giveSheetBack, lendSheet } from '@/lib/work/sheet/lend-sheet'
 import { MarksInput, MOST_ON_SHEET } from '@/lib/work/sheet/mark-input'
 import { recordMarks } from '@/lib/work/sheet/record-marks'
-import { sheetProgress } from '@/lib/work/sheet/sheet-progress'
+import { passersProgress } from '@/lib/work/sheet/sheet-progress'
 
 const params = z.object({ slug: z.string() })
 
@@ -22,7 +22,7 @@ export const GET = route({
   handler: async ({ db, viewer, params, query }) => {
     const permit = await permitCampaign(db, viewer, params.slug, 'grade')
     const lent = await lendSheet(db, permit, query.count)
-    const progress = await sheetProgress(db, permit)
+    const progress = await passersProgress(db, permit)
     return Response.json({ ...lent, progress }, { headers: { 'cache-control': 'no-store' } })
   },
 })
@@ -34,7 +34,7 @@ export const POST = route({
   handler: async ({ db, viewer, params, body }) => {
     const permit = await permitCampaign(db, viewer, params.slug, 'grade')
     const recorded = await recordMarks(db, permit, body.marks)
-    return Response.json({ ...recorded, progress: await sheetProgress(db, permit) })
+    return Response.json({ ...recorded, progress: await passersProgress(db, permit) })
   },
 })
 
