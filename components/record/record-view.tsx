@@ -1,4 +1,3 @@
-import Link from 'next/link'
 import { FormSection } from '@/components/campaigns/form-section'
 import { counted } from '@/components/campaigns/in-words'
 import { PageHead } from '@/components/campaigns/page-head'
@@ -21,7 +20,7 @@ export function RecordView({
   /** For leads: everybody who grades. */
   graders: { id: number; name: string; ended: 0 | 1 }[] | null
 }) {
-  const { looks, days, medianSeconds, consistency, calibration, practised } = record
+  const { looks, days, medianSeconds, consistency, calibration, practice } = record
   const whose = own ? 'you' : record.person.name
   const home = `/campaigns/${slug}`
   return (
@@ -99,15 +98,12 @@ export function RecordView({
         ) : (
           <ConfusionTable confusion={calibration} caption={`${counted(calibration.answers, 'answer')} at the bench`} />
         )}
-        {own && practised > 0 ? (
-          <p className="text-small text-mute">
-            Besides, you have practised on {counted(practised, 'stamp')}.{' '}
-            <Link href={`${home}/practice`} prefetch={false} className="underline decoration-line underline-offset-4">
-              Your results in practice
-            </Link>
-          </p>
-        ) : null}
       </FormSection>
+      {practice && practice.answers > 0 ? (
+        <FormSection title="Practice" about="Your answers, which count nowhere. Nobody else sees them, leads neither.">
+          <ConfusionTable confusion={practice} caption={`${counted(practice.answers, 'answer')} in practice`} />
+        </FormSection>
+      ) : null}
       {graders ? (
         <FormSection title="Everybody who grades" about="For leads only.">
           <ul className="flex flex-wrap gap-2">

@@ -4,6 +4,7 @@ import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { ownRecord, recordOfGrader } from './grader-record'
+import { answerPractice, practiceState } from './practice'
 import { selfConsistency } from './self-consistency'
 
 let scenario: Scenario
@@ -57,6 +58,15 @@ describe('a grader’s record', () => {
     await give(0, ids[0], { grade: 'N' })
     await give(0, ids[0], { grade: 'A' })
     expect((await recordOfGrader(scenario.db, lead, scenario.graders[0].id)).calibration.lensesSeen.n).toBe(0)
+  })
+
+  it('holds practice for the person alone: a lead is not told of it', async () => {
+    const permit = await permitOf(0)
+    const { next } = await practiceState(scenario.db, permit)
+    await answerPractice(scenario.db, permit, next!.id, { grade: 'A', id: 'practised-once', seconds: 1 })
+    expect((await ownRecord(scenario.db, permit)).practice?.lensesSeen).toMatchObject({ n: 1, of: 1 })
+    const lead = await scenario.permit(scenario.lead, 'lead')
+    expect((await recordOfGrader(scenario.db, lead, scenario.graders[0].id)).practice).toBeNull()
   })
 
   it('tells self-consistency from what came back', async () => {

@@ -8,7 +8,7 @@ import {
   listSeconds,
   type GraderRow,
 } from '@/db/queries/grader-record'
-import { findPracticeCounts } from '@/db/queries/practice'
+import { countPracticeAnswers } from '@/db/queries/practice'
 import { listRepeatPairs } from '@/db/queries/repeats'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
@@ -31,8 +31,8 @@ export interface GraderRecord {
   calibration: Confusion
   /** How many more calibration answers there are than `calibration` counts. */
   notYet: boolean
-  /** How many stamps were answered in practice; what was answered is the person's own. */
-  practised: number
+  /** In practice: the person's own, told to nobody else. */
+  practice: Confusion | null
 }
 
 const DAYS = 30
@@ -42,7 +42,7 @@ const STEP = 5
 
 /** The record of whoever asks. */
 export const ownRecord = (db: Kysely<DB>, { campaign, viewer }: CampaignPermit<'grade'>): Promise<GraderRecord> =>
-  recordOf(db, campaign.id, viewer, STEP)
+  recordOf(db, campaign.id, viewer, true)
 
 /** @throws Problem 404 for somebody who does not grade in this campaign. */
 export async function recordOfGrader(
@@ -52,7 +52,7 @@ export async function recordOfGrader(
 ): Promise<GraderRecord> {
   const person = (await listGraders(db, campaign.id)).find(({ id }) => id === personId)
   if (!person) throw notFound('grader')
-  return recordOf(db, campaign.id, person, 1)
+  return recordOf(db, campaign.id, person, false)
 }
 
 export const gradersOf = (db: Kysely<DB>, { campaign }: CampaignPermit<'lead'>): Promise<GraderRow[]> =>
@@ -62,12 +62,12 @@ async function recordOf(
   db: Kysely<DB>,
   campaignId: number,
   { id, name }: { id: number; name: string },
-  step: number,
+  own: boolean,
 ): Promise<GraderRecord> {
   const who = { campaignId, personId: id }
   const letters = await countByLetter(db, who)
   const answers = await listCalibrationAnswers(db, who)
-  const told = answers.slice(0, Math.floor(answers.length / step) * step)
+  const told = own ? answers.slice(0, Math.floor(answers.length / STEP) * STEP) : answers
   return {
     person: { id, name },
     grades: LETTERS.map((letter) => ({ letter, n: letters.find(({ grade }) => grade === letter)?.n ?? 0 })),
@@ -77,7 +77,7 @@ async function recordOf(
     consistency: selfConsistency(await listRepeatPairs(db, who)),
     calibration: confusionOf(told.map((answer) => ({ ...answer, n: 1 }))),
     notYet: told.length < answers.length,
-    practised: (await findPracticeCounts(db, campaignId, id)).answered,
+    practice: own ? confusionOf(await countPracticeAnswers(db, campaignId, id)) : null,
   }
 }
 
