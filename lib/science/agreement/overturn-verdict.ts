@@ -1,12 +1,15 @@
 /** What would have changed a verdict by reliability: each grade left out or another, fewer grades, one more, other rates. */
+import { gradeCode } from '@/lib/science/agreement/grade-table'
 import { GRADES, type Grade } from '@/lib/science/agreement/grades'
 import type { GraderRates } from '@/lib/science/agreement/lens-model'
 import type { Outcome } from '@/lib/science/agreement/mean-rule'
+import { gradeWeight } from '@/lib/science/agreement/posterior'
 import {
   decideByReliability,
   type ReliabilityAnswer,
   type ReliabilityRule,
 } from '@/lib/science/agreement/reliability-rule'
+import { errorRateProblems, SUM_SLACK, type ErrorRates } from '@/lib/science/agreement/sequential-test'
 
 /** What the verdict rests on. */
 export interface VerdictBasis {
@@ -44,13 +47,11 @@ export function overturningGrades(basis: VerdictBasis): { answer: number; instea
  * @returns indexes of answers, or null where leaving out even all of that side changes nothing, or nothing is decided.
  */
 export function fewestToOverturn(basis: VerdictBasis): number[] | null {
-  const { outcome, weights } = decideFrom(basis)
+  const { outcome } = decideFrom(basis)
   if (outcome !== 'confirmed' && outcome !== 'set aside') return null
   const side = outcome === 'confirmed' ? 1 : -1
-  const weightOf = (answer: ReliabilityAnswer) =>
-    weights.find(({ grader, grade }) => grader === answer.grader && grade === answer.grade)?.weight ?? 0
   const strongest = basis.answers
-    .map((answer, at) => ({ at, pull: side * weightOf(answer) }))
+    .map(({ grade, rates }, at) => ({ at, pull: side * gradeWeight(rates, gradeCode(grade)) }))
     .filter(({ pull }) => pull > 0)
     .sort((a, b) => b.pull - a.pull || a.at - b.at)
   const left: number[] = []
@@ -73,18 +74,33 @@ export function oneMoreGrade(
   })
 }
 
+/** Significant digits of the error rates that are told. */
+const DIGITS = 2
+
 /**
- * The error rates at which this evidence would just reach each boundary, the other rate unchanged: it is confirmed where
+ * The error rates from which on this evidence reaches each boundary, the other rate unchanged: it is confirmed where
  * `falseConfirmed` is allowed to be at least the first, and set aside where `missedLens` is at least the second.
  *   alpha = (1 - beta) e^-evidence,   beta = (1 - alpha) e^evidence
- * A number of 1 or more means that no rule would.
+ * Rounded up to two digits, so that a rule with the number told does decide, and never above a rate of the rule itself that decides. The least number of grades is passed over.
+ * @returns null where that rate and the other unchanged make no rule: together they must be less than 1.
  */
 export function errorRatesToDecide(
   evidence: number,
-  rule: ReliabilityRule,
-): { falseConfirmed: number; missedLens: number } {
+  { falseConfirmed, missedLens }: ErrorRates,
+): { falseConfirmed: number | null; missedLens: number | null } {
+  const alpha = roundedUp((1 - missedLens) * Math.exp(-evidence), falseConfirmed)
+  const beta = roundedUp((1 - falseConfirmed) * Math.exp(evidence), missedLens)
   return {
-    falseConfirmed: (1 - rule.missedLens) * Math.exp(-evidence),
-    missedLens: (1 - rule.falseConfirmed) * Math.exp(evidence),
+    falseConfirmed: errorRateProblems({ falseConfirmed: alpha, missedLens }).length > 0 ? null : alpha,
+    missedLens: errorRateProblems({ falseConfirmed, missedLens: beta }).length > 0 ? null : beta,
   }
+}
+
+function roundedUp(rate: number, ofRule: number): number {
+  if (!(rate > 0 && rate < 1)) return rate
+  const near = Number(rate.toPrecision(DIGITS))
+  const isEnough = (other: number) => other >= rate * (1 - SUM_SLACK)
+  const step = 10 ** (Math.floor(Math.log10(near)) + 1 - DIGITS)
+  const up = isEnough(near) ? near : Number((near + step).toPrecision(DIGITS))
+  return isEnough(ofRule) ? Math.min(up, ofRule) : up
 }

@@ -81,7 +81,7 @@ describe('what would have changed it', () => {
       'Without the A of curlew it would be open (0.94).',
       'Had curlew, dunlin or plover given C or N instead of A, it would be open.',
       'One more grade of somebody new would make it open with N (0.94).',
-      'It would be confirmed by any rule that lets at least 0.0018 of what is no lens be confirmed; this one lets 0.01.',
+      'With the other error rate as it is, these grades would be confirmed by any rule that lets at least 0.0018 of what is no lens be confirmed (this one 0.01).',
     ])
   })
 
@@ -93,10 +93,25 @@ describe('what would have changed it', () => {
   })
 
   it('of one in between: which rules would decide it', () => {
-    // A, A, C: evidence 32: alpha = 0.9 / 32 = 0.028; beta would be above 1.
+    // A, A, C: evidence 32: alpha = 0.9 / 32 = 0.0281, rounded up; beta would be above 1.
     expect(changes('AAC').at(-1)).toBe(
-      'These grades would be confirmed by a rule that lets 0.028 of what is no lens be confirmed (this one 0.01).',
+      'With the other error rate as it is, these grades would be confirmed by any rule that lets at least 0.029 of what is no lens be confirmed (this one 0.01).',
     )
+  })
+
+  it('names no error rates where the least number of grades is what keeps a verdict open', () => {
+    // Three A under a rule that asks for four grades: the evidence of 512 is past the boundary of 90 and decides nothing.
+    const rule = { ...RULE, leastGrades: 4 }
+    const answers = [...'AAAU'].map((grade) => ({ grade: grade as Answer, grader: 'curlew', rates: RATES }))
+    expect(verdictChanges({ rule, answers, lensShare: 0.2 }, RATES).at(-1)).toBe(
+      'Without 1 more grade no error rates would decide it: the rule asks for at least 4.',
+    )
+    expect(changes('').join(' ')).not.toContain('any rule')
+  })
+
+  it('names no error rate that would make no rule with the other one', () => {
+    // A, N: evidence 8 * 0.125 = 1: alpha = 1 - beta and beta = 1 - alpha, which sum to 1 with the other.
+    expect(changes('AN').join(' ')).not.toContain('any rule')
   })
 
   it('keeps to the own grade of a reader who may learn no other weight', () => {

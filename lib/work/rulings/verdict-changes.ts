@@ -92,30 +92,28 @@ function oneMore(basis: VerdictBasis, newcomer: GraderRates, now: Outcome): stri
   return `One more grade of somebody new would make it ${inARow(each)}.`
 }
 
-function otherRates({ rule }: VerdictBasis, evidence: number, outcome: Outcome): string[] {
+/** Error rates decide nothing below the least number of grades; each is told with the other as it is. */
+function otherRates({ rule, answers }: VerdictBasis, evidence: number, outcome: Outcome): string[] {
+  const lacking = rule.leastGrades - answers.filter(({ grade }) => grade !== 'U').length
+  if (lacking > 0) {
+    const grades = `${lacking} more ${lacking === 1 ? 'grade' : 'grades'}`
+    return [`Without ${grades} no error rates would decide it: the rule asks for at least ${rule.leastGrades}.`]
+  }
   const { falseConfirmed, missedLens } = errorRatesToDecide(evidence, rule)
-  const share = (value: number) => String(Number(value.toPrecision(2)))
-  if (outcome === 'confirmed') {
-    return [
-      `It would be confirmed by any rule that lets at least ${share(falseConfirmed)} of what is no lens be confirmed; this one lets ${rule.falseConfirmed}.`,
-    ]
+  const confirms =
+    falseConfirmed !== null &&
+    `confirmed by any rule that lets at least ${falseConfirmed} of what is no lens be confirmed (this one ${rule.falseConfirmed})`
+  const setsAside =
+    missedLens !== null &&
+    `set aside by any rule that lets at least ${missedLens} of lenses be set aside (this one ${rule.missedLens})`
+  const told = {
+    confirmed: [confirms],
+    'set aside': [setsAside],
+    open: [confirms, setsAside],
+    split: [confirms, setsAside],
   }
-  if (outcome === 'set aside') {
-    return [
-      `It would be set aside by any rule that lets at least ${share(missedLens)} of lenses be set aside; this one lets ${rule.missedLens}.`,
-    ]
-  }
-  const ways = [
-    ...(falseConfirmed < 1
-      ? [
-          `confirmed by a rule that lets ${share(falseConfirmed)} of what is no lens be confirmed (this one ${rule.falseConfirmed})`,
-        ]
-      : []),
-    ...(missedLens < 1
-      ? [`set aside by a rule that lets ${share(missedLens)} of lenses be set aside (this one ${rule.missedLens})`]
-      : []),
-  ]
-  return ways.length > 0 ? [`These grades would be ${inARow(ways, 'or')}.`] : []
+  const ways = told[outcome].filter((way) => way !== false)
+  return ways.length > 0 ? [`With the other error rate as it is, these grades would be ${inARow(ways, 'or')}.`] : []
 }
 
 /** 'a', 'a and b', 'a, b and c' */
