@@ -23,15 +23,26 @@ export async function listRuleVersions(db: Kysely<DB>, permit: CampaignPermit<'l
   return rows.map((row) => ({ ...ruleOf(row), author: row.author, createdAt: row.created_at }))
 }
 
-/** Appends a version and asks for a consensus run, which applies it to every candidate. Earlier versions stay as they were. */
+/**
+ * Appends a version and asks for a consensus run, which applies it to every candidate. Earlier versions stay as they were.
+ * @param triedAgainst version that must still be in force; any when left out.
+ * @throws Problem 409 `rule-changed`: another version came since; `rule-unchanged`: it is the rule in force.
+ */
 export async function changeRule(
   db: Kysely<DB>,
   permit: CampaignPermit<'lead'>,
   input: RuleInput,
+  triedAgainst?: number,
 ): Promise<{ version: number }> {
   const { campaign, viewer } = permit
   return db.transaction().execute(async (transaction) => {
     const before = ruleOf(await requireRule(transaction, campaign.id))
+    if (triedAgainst !== undefined && before.version !== triedAgainst) {
+      throw conflict(
+        'rule-changed',
+        `Version ${before.version} of the rule came into force since this page was opened, so yours was not made the rule. Load the page again to try it against that version; your thresholds stay in the address.`,
+      )
+    }
     if (isSameRule(before, input))
       throw conflict('rule-unchanged', `This is the rule in force already (version ${before.version}).`)
     const version = before.version + 1

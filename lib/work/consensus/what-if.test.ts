@@ -207,6 +207,16 @@ describe('makeRule', () => {
     expect(await db.selectFrom('rule').selectAll().where('version', '>', 2).execute()).toEqual([])
   })
 
+  it('takes one of two that were tried against one version at once, and refuses the other', async () => {
+    const { db } = scenario
+    const permit = await lead()
+    const others = RuleInput.parse({ method: 'reliability', falseConfirmed: 0.01 })
+    const both = await Promise.allSettled([makeRule(db, permit, tried, 1), makeRule(db, permit, others, 1)])
+    expect(both[0]).toEqual({ status: 'fulfilled', value: { version: 2 } })
+    expect(both[1]).toMatchObject({ status: 'rejected', reason: { status: 409, type: 'rule-changed' } })
+    expect(await db.selectFrom('rule').selectAll().where('version', '>', 2).execute()).toEqual([])
+  })
+
   it('refuses the rule that is in force already', async () => {
     const { db } = scenario
     const same = RuleInput.parse({ method: 'mean', gradesWanted: 4, leastGrades: 2 })

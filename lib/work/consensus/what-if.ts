@@ -15,7 +15,6 @@ import type { RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { OUTCOMES, tallyCandidates, type CandidateTallies } from '@/lib/science/agreement/outcomes-at-once'
-import { conflict } from '@/lib/platform/problems/problem'
 import { changeRule } from '@/lib/work/campaigns/change-settings'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
@@ -157,12 +156,5 @@ export async function makeRule(
   rule: RuleInput,
   triedAgainst: number,
 ): Promise<{ version: number }> {
-  const { version } = await ruleInForce(db, permit.campaign.id)
-  if (version !== triedAgainst) {
-    throw conflict(
-      'rule-changed',
-      `Version ${version} of the rule came into force since this page was opened, so yours was not made the rule. Load the page again to try it against that version; your thresholds stay in the address.`,
-    )
-  }
-  return changeRule(db, permit, rule)
+  return changeRule(db, permit, rule, triedAgainst)
 }
