@@ -224,19 +224,24 @@ export async function listAskedCandidates(
     .execute()
 }
 
-/** How many looks wait for this person, and how many they have answered. */
+/** How many looks wait for this person, and how many of their answers took no place of the wanted number. */
 export async function countAsks(
   db: Kysely<DB>,
   { campaignId, personId }: { campaignId: number; personId: number },
-): Promise<{ open: number; answered: number }> {
+): Promise<{ open: number; beside: number }> {
   return db
     .selectFrom('asked_look')
+    .leftJoin('grade', 'grade.id', 'asked_look.grade_id')
     .select((e) => [
-      e.fn.countAll<number>().filterWhere('grade_id', 'is', null).filterWhere('withdrawn_at', 'is', null).as('open'),
-      e.fn.countAll<number>().filterWhere('grade_id', 'is not', null).as('answered'),
+      e.fn
+        .countAll<number>()
+        .filterWhere('asked_look.grade_id', 'is', null)
+        .filterWhere('asked_look.withdrawn_at', 'is', null)
+        .as('open'),
+      e.fn.countAll<number>().filterWhere('grade.occasion', '=', 'asked').as('beside'),
     ])
-    .where('campaign_id', '=', campaignId)
-    .where('person_id', '=', personId)
+    .where('asked_look.campaign_id', '=', campaignId)
+    .where('asked_look.person_id', '=', personId)
     .executeTakeFirstOrThrow()
 }
 

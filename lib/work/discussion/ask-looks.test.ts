@@ -8,10 +8,11 @@ import { revealedTo } from '@/lib/work/grading/may-reveal'
 import { changeRole } from '@/lib/work/people/change-membership'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { lendNext } from '@/lib/work/queue/lend-next'
+import { queueProgress } from '@/lib/work/queue/queue-progress'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { AskInput, LONGEST_NOTE } from './ask-input'
 import { askLooks } from './ask-looks'
-import { askableAt, askedOfMe, asksOf, informedPeople, openAsks } from './list-asks'
+import { answeredPeople, askableAt, askedOfMe, asksOf, openAsks } from './list-asks'
 import { withdrawAsk } from './withdraw-ask'
 
 let scenario: Scenario
@@ -149,6 +150,35 @@ describe('the answer', () => {
     expect((await asksOf(scenario.db, await lead(), full)).map(({ state }) => state)).toEqual(['answered', 'answered'])
   })
 
+  it('of somebody who had not graded takes a place where one is left: the rule and the bench count the same looks', async () => {
+    const open = await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
+    await grade(curlew, 'B', {}, open)
+    await ask([plover], null, open)
+    await grade(plover, 'N', { asked: true }, open)
+    const row = await scenario.db.selectFrom('candidate').select('grades_given').where('id', '=', open).execute()
+    expect(row).toEqual([{ grades_given: 2 }])
+    expect((await bench(dunlin)).candidates).toEqual([])
+    await expect(grade(dunlin, 'A', {}, open)).rejects.toMatchObject({ type: 'candidate-full' })
+    expect(await queueProgress(scenario.db, await scenario.permit(plover, 'grade'))).toMatchObject({ given: 1 })
+    const reads = await scenario.permit(scenario.lead, 'read')
+    const { judgement } = await candidateEvidence(scenario.db, reads, open)
+    expect(judgement?.grades.map(({ by, occasion }) => `${by} ${occasion}`)).toEqual(['curlew first', 'plover asked'])
+    await ask([plover], null, open)
+    await grade(plover, 'B', { asked: true }, open)
+    expect(await queueProgress(scenario.db, await scenario.permit(plover, 'grade'))).toMatchObject({ given: 2 })
+  })
+
+  it('of somebody who had not graded takes no place that another holds on their bench', async () => {
+    const open = await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
+    await grade(curlew, 'B', {}, open)
+    expect((await bench(dunlin)).candidates).toMatchObject([{ name: 'SWS-2' }])
+    await ask([plover], null, open)
+    await grade(plover, 'N', { asked: true }, open)
+    expect((await grade(dunlin, 'A', {}, open)).grade.grade).toBe('A')
+    const row = await scenario.db.selectFrom('candidate').select('grades_given').where('id', '=', open).execute()
+    expect(row).toEqual([{ grades_given: 2 }])
+  })
+
   it('can be delivered twice and corrected; the correction replaces the asked answer', async () => {
     await ask([curlew])
     const id = 'uid-00000009'
@@ -183,7 +213,12 @@ describe('the answer', () => {
     await grade(plover, 'A')
     expect(await counted()).toContain('avocet A asked informed')
     expect(await counted()).toContain('plover A asked')
-    expect(await informedPeople(scenario.db, full)).toEqual(new Set([scenario.lead.id]))
+    expect(await answeredPeople(scenario.db, full)).toEqual(
+      new Map([
+        [scenario.lead.id, { informed: true }],
+        [plover.id, { informed: false }],
+      ]),
+    )
   })
 
   it('is given without the others’ grades in sight: they are withheld again until then', async () => {

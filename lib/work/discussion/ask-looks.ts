@@ -84,7 +84,7 @@ async function askOne(
 ): Promise<void> {
   const ask = { campaignId: campaign.id, candidateId: candidate.id, personId: person.personId }
   const id = await insertAskedLook(transaction, { ...ask, askedBy: viewer.id, note, now: isoTime() })
-  // An asked look takes no place, so the place that a lease keeps goes back to the others.
+  // An asked look keeps no place, so the place that a lease keeps goes back to the others.
   await deleteLeases(transaction, campaign.id, person.personId, [candidate.id])
   if (person.email && person.personId !== viewer.id) {
     const mail = askedMail({

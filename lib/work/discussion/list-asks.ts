@@ -52,10 +52,15 @@ export async function asksOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, can
   }))
 }
 
-/** Whose answer to an asked look at this candidate came when they could have seen the others' grades. */
-export async function informedPeople(db: Kysely<DB>, candidateId: number): Promise<Set<number>> {
+/** Who has answered an asked look at the candidate, and whether they could see the others' grades before: shown, or a lead's by role. */
+export async function answeredPeople(db: Kysely<DB>, candidateId: number): Promise<Map<number, { informed: boolean }>> {
   const rows = await listAsksOf(db, candidateId)
-  return new Set(rows.filter((row) => row.answeredAt && row.informed).map(({ personId }) => personId))
+  const people = new Map<number, { informed: boolean }>()
+  for (const { personId, answeredAt, informed } of rows) {
+    if (answeredAt === null) continue
+    people.set(personId, { informed: informed === 1 || people.get(personId)?.informed === true })
+  }
+  return people
 }
 
 /** Everybody whom a lead could ask for a look at this candidate. */

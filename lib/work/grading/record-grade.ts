@@ -47,11 +47,13 @@ export interface RecordedGrade {
 }
 
 /**
- * Records a person's grade of a candidate: the first one, the answer to an asked look, which takes no place of the wanted
- * number, or a correction of the newest, which is a new row that names the row it replaces. A repeated call changes nothing, told by its id or, without one, by its content.
+ * Records a person's grade of a candidate: the first one, the answer to an asked look, or a correction of the newest, which is a new
+ * row that names the row it replaces. A repeated call changes nothing, told by its id or, without one, by its content.
  *
  * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
  * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
+ * The answer to an asked look is taken in any case. Of somebody who has not graded the candidate it is the first grade where a place
+ * is left, so that the rule and the queue count the same looks; else it takes none.
  * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`,
  * `judgement-seen`, 422 no such recipe.
  */
@@ -81,12 +83,13 @@ export async function recordGrade(
     if (corrected) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
     if (!corrected && !ask && !candidate.is_calibration) await assertRoom(transaction, candidate, viewer.id, rule)
+    const first = !standing && (!ask || (await roomAt(transaction, candidate, viewer.id, rule)) === 'left')
     const row = await insertGrade(transaction, {
       uid: input.id ?? randomUUID(),
       campaign_id: campaign.id,
       candidate_id: candidateId,
       person_id: viewer.id,
-      occasion: ask ? 'asked' : (corrected?.occasion ?? 'first'),
+      occasion: first ? 'first' : ask ? 'asked' : (corrected?.occasion ?? 'first'),
       grade: input.grade,
       tags: toJson<string[]>(input.tags),
       reason: input.reason,
@@ -97,7 +100,6 @@ export async function recordGrade(
       replaces: corrected?.id ?? null,
       given_at: isoTime(),
     })
-    const first = !corrected && !ask
     if (ask) await setAskAnswered(transaction, { id: ask.id, gradeId: row.id, candidateId, personId: viewer.id })
     if (first) await setFirstGradeGiven(transaction, candidateId, viewer.id)
     await keepEstimate(transaction, campaign.id, rule, candidateId)
@@ -168,21 +170,35 @@ async function assertUnswayed(
   )
 }
 
+const wantedOf = (candidate: CandidateToGrade, rule: RuleInForce) => Math.max(rule.gradesWanted, candidate.looks_asked)
+
+/** Whether a place is left for the person: one that their own live lease holds, or that neither a grade nor another's lease takes. */
+async function roomAt(
+  transaction: Transaction<DB>,
+  candidate: CandidateToGrade,
+  personId: number,
+  rule: RuleInForce,
+): Promise<'left' | 'given' | 'held by others'> {
+  const wanted = wantedOf(candidate, rule)
+  if (candidate.grades_given >= wanted) return 'given'
+  const { own, others } = await countLiveLeases(transaction, candidate.id, personId, isoTime())
+  return own === 0 && candidate.grades_given + others >= wanted ? 'held by others' : 'left'
+}
+
 async function assertRoom(
   transaction: Transaction<DB>,
   candidate: CandidateToGrade,
   personId: number,
   rule: RuleInForce,
 ): Promise<void> {
-  const wanted = Math.max(rule.gradesWanted, candidate.looks_asked)
-  if (candidate.grades_given >= wanted) {
+  const room = await roomAt(transaction, candidate, personId, rule)
+  if (room === 'given') {
     throw conflict(
       'candidate-full',
-      `This candidate has the ${wanted} grades that it wants by now, so yours was not taken. Nothing else is affected; go on with the next.`,
+      `This candidate has the ${wantedOf(candidate, rule)} grades that it wants by now, so yours was not taken. Nothing else is affected; go on with the next.`,
     )
   }
-  const { own, others } = await countLiveLeases(transaction, candidate.id, personId, isoTime())
-  if (own === 0 && candidate.grades_given + others >= wanted) {
+  if (room === 'held by others') {
     throw conflict(
       'candidate-full',
       'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.',

@@ -17,7 +17,7 @@ export interface AskedCandidate extends QueuedCandidate {
 
 /**
  * The looks that leads have asked of this person by name come before everything else, longest asked first. They are not lent:
- * an asked look takes no place of the wanted number, so nobody else waits for it.
+ * an asked look keeps no place of the wanted number, so nobody else waits for it. It takes one where one is left when it is given.
  */
 export async function askedLooks(
   db: Kysely<DB>,

@@ -26,7 +26,7 @@ export async function queueProgress(db: Kysely<DB>, permit: CampaignPermit<'grad
   const open = await countOpenCandidates(db, asker)
   const place = await countLooks(db, campaign.id, viewer.id)
   return {
-    given: place + asks.answered,
+    given: place + asks.beside,
     left: open + (await countMixedAhead(db, asker, open, place)) + asks.open,
   }
 }

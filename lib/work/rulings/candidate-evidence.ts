@@ -12,7 +12,7 @@ import { notFound } from '@/lib/platform/problems/problem'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
-import { informedPeople } from '@/lib/work/discussion/list-asks'
+import { answeredPeople } from '@/lib/work/discussion/list-asks'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
@@ -71,6 +71,7 @@ export interface EvidenceGrade {
   /** The grade of the person who asks. */
   own: boolean
   grade: GradeLetter
+  /** Of somebody who was asked for a look, whether it took a place of the wanted number or not. */
   occasion: 'first' | 'asked'
   /** An asked look of somebody who could see the others' grades before. */
   informed: boolean
@@ -153,13 +154,13 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
   const onlyOwn = permit.role === 'grader'
   const by = (person: { name: string; pseudonym: string | null }) =>
     named ? person.name : (person.pseudonym ?? 'a member')
-  const [answers, verdictRows, rulingRows, changes, designation, informed] = await Promise.all([
+  const [answers, verdictRows, rulingRows, changes, designation, asked] = await Promise.all([
     listAnswersOf(db, candidate.id, { graderId: onlyOwn ? permit.viewer.id : undefined }),
     listVerdictsOf(db, candidate.id),
     listRulingsOf(db, candidate.id),
     listStateChanges(db, candidate.id),
     findDesignation(db, candidate.id),
-    informedPeople(db, candidate.id),
+    answeredPeople(db, candidate.id),
   ])
   const verdicts = verdictRows.map(({ rule, ...verdict }) => ({ ...verdict, rule: ruleOf(rule) }))
   const rulings = rulingRows.map((row) => ({
@@ -190,7 +191,9 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     lensRedshift: candidate.lens_redshift,
     sourceRedshift: candidate.source_redshift,
     votes: countLetters(answers),
-    grades: answers.map((answer) => gradeOf(answer, by(answer), permit.viewer.id, informed)).sort(surestFirst),
+    grades: answers
+      .map((answer) => gradeOf(answer, by(answer), permit.viewer.id, asked.get(answer.personId)))
+      .sort(surestFirst),
     verdict: verdict ? { ...verdict, reason: reasonInShort(verdict.reason) } : null,
     why: verdict ? await findWhy(db, candidate.id, verdict, reader) : null,
     rulings,
@@ -215,14 +218,19 @@ function countLetters(answers: readonly EvidenceAnswer[]): Record<GradeLetter, n
   return votes
 }
 
-function gradeOf(answer: EvidenceAnswer, by: string, viewerId: number, informed: ReadonlySet<number>): EvidenceGrade {
+function gradeOf(
+  answer: EvidenceAnswer,
+  by: string,
+  viewerId: number,
+  asked: { informed: boolean } | undefined,
+): EvidenceGrade {
   return {
     id: answer.id,
     by,
     own: answer.personId === viewerId,
     grade: answer.grade,
-    occasion: answer.occasion === 'asked' ? 'asked' : 'first',
-    informed: answer.occasion === 'asked' && informed.has(answer.personId),
+    occasion: asked ? 'asked' : 'first',
+    informed: asked?.informed ?? false,
     tags: fromJson(answer.tags),
     remark: answer.remark,
     seconds: answer.seconds,
