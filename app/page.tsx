@@ -8,13 +8,17 @@ import { database } from '@/lib/platform/database'
 import { mayCreateCampaign } from '@/lib/work/campaigns/create-campaign'
 import { listCampaigns } from '@/lib/work/campaigns/list-campaigns'
 import { requireViewer } from '@/lib/work/people/session'
+import { withLeft } from '@/lib/work/queue/left-to-look-at'
 
 export const metadata: Metadata = { title: { absolute: 'Your campaigns · Ringside' } }
 
 export default async function HomePage() {
   const viewer = await requireViewer('/')
   const db = await database()
-  const [cards, mayCreate] = await Promise.all([listCampaigns(db, viewer), mayCreateCampaign(db, viewer)])
+  const [cards, mayCreate] = await Promise.all([
+    listCampaigns(db, viewer).then((all) => withLeft(db, viewer, all)),
+    mayCreateCampaign(db, viewer),
+  ])
   return (
     <SiteFrame viewer={viewer} mayCreate={mayCreate}>
       <PageHead title={cards.length ? `You are in ${counted(cards.length, 'campaign')}` : 'Your campaigns'}>

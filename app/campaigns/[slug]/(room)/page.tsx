@@ -5,6 +5,7 @@ import { FirstPassPart } from '@/components/campaigns/first-pass-part'
 import { GraderOverview, LeadOverview, ViewerOverview } from '@/components/campaigns/overview-view'
 import { fromJson } from '@/db/schema/values'
 import { campaignOverview } from '@/lib/work/campaigns/campaign-overview'
+import { leftToLookAt } from '@/lib/work/queue/left-to-look-at'
 import { agreementReport } from '@/lib/work/reports/agreement-report'
 import { mayPass } from '@/lib/work/sheet/may-pass'
 import { sheetCompleteness, sheetProgress } from '@/lib/work/sheet/sheet-progress'
@@ -23,6 +24,10 @@ export default async function OverviewPage({ params }: PageProps<'/campaigns/[sl
   const { db, permit } = await permitPage(slug, 'read')
   const { campaign, role } = permit
   const overview = await campaignOverview(db, permit)
+  if (overview.mine) {
+    const { permit: grading } = await permitPage(slug, 'grade')
+    overview.mine.left = await leftToLookAt(db, grading, overview.mine.asked)
+  }
   const newest = overview.outcome?.newestConfirmed ?? []
   const ids = newest.map(({ id }) => id)
   const pictures = await picturesOf(db, campaign, ids)
