@@ -32,15 +32,15 @@ const cookiesOf = (response: Response): string =>
     .map((cookie) => cookie.split(';')[0])
     .join('; ')
 
-/** The lead's session as a Cookie header. It outlives the server, whose secret is in the data folder. */
-export async function signInCookie(url: string): Promise<string> {
+/** The lead's session, or that of somebody with the same password, as a Cookie header. It outlives the server, whose secret is in the data folder. */
+export async function signInCookie(url: string, email = EMAIL): Promise<string> {
   const asked = await fetch(`${url}/api/auth/csrf`)
   const { csrfToken } = (await asked.json()) as { csrfToken: string }
   const response = await fetch(`${url}/api/auth/callback/credentials`, {
     method: 'POST',
     redirect: 'manual',
     headers: { cookie: cookiesOf(asked), 'content-type': 'application/x-www-form-urlencoded' },
-    body: new URLSearchParams({ csrfToken, email: EMAIL, password: PASSWORD, json: 'true' }),
+    body: new URLSearchParams({ csrfToken, email, password: PASSWORD, json: 'true' }),
   })
   const cookie = cookiesOf(response)
   if (!cookie.includes('session-token'))
