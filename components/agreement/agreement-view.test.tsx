@@ -1,4 +1,4 @@
-import { render, screen, within } from '@testing-library/react'
+import { cleanup, render, screen, within } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
 import { describe, expect, it, vi } from 'vitest'
 import type { FormState } from '@/components/ui/form-state'
@@ -113,6 +113,15 @@ describe('the Agreement page', () => {
     expect(screen.getByRole('heading', { level: 1 })).toHaveTextContent('Agreement is tentative: alpha 0.70')
     expect(screen.getByRole('heading', { name: 'No date to be done by' })).toBeInTheDocument()
     expect(screen.getByText('No estimate: nobody has given a look in the last 7 days.')).toBeInTheDocument()
+  })
+
+  it('counts those who are left out apart from the graders whose reliability it tells', () => {
+    const { graders } = reportWith()
+    view(reportWith())
+    expect(screen.getByRole('heading', { name: 'How reliable 1 grader is, one more left out' })).toBeInTheDocument()
+    cleanup()
+    view(reportWith({ graders: graders.map((grader) => ({ ...grader, leftOut: null })) }))
+    expect(screen.getByRole('heading', { name: 'How reliable 2 graders are' })).toBeInTheDocument()
   })
 
   it('tells what stands out with the numbers that raised it', () => {

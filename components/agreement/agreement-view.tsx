@@ -27,6 +27,15 @@ interface Props {
   pseudonyms: boolean
 }
 
+/** `How reliable 3 graders are, one more left out` */
+function reliabilityTitle(graders: AgreementReport['graders']): string {
+  const out = graders.filter(({ leftOut }) => leftOut !== null).length
+  const counting = graders.length - out
+  if (counting === 0) return 'How reliable the graders are, all left out'
+  const rest = out === 0 ? '' : out === 1 ? ', one more left out' : `, ${out} more left out`
+  return `How reliable ${counted(counting, 'grader is', 'graders are')}${rest}`
+}
+
 function headline({ campaign }: AgreementReport): string {
   const alpha = campaign.coefficients.find(({ key }) => key === 'alpha')?.value ?? null
   if (alpha === null) return 'Nothing to compare yet'
@@ -67,7 +76,7 @@ export function AgreementView({ report, campaignPath, fileName, leastShared, ale
             <CoefficientsPart campaign={report.campaign} fileName={fileName} />
             <MatrixPart pairs={report.pairs} graders={graders} leastShared={leastShared} fileName={fileName} />
           </Part>
-          <Part title={`How reliable ${counted(people.length, 'grader is', 'graders are')}`}>
+          <Part title={reliabilityTitle(graders)}>
             <ReliabilityPart report={report} fileName={fileName} />
             <div className="border-t border-line">
               {people.map((person, at) => (

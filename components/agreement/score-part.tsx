@@ -22,7 +22,7 @@ export function ScorePart({ score, fileName }: { score: ScoreReport | null; file
   return (
     <div className="flex flex-col gap-4">
       <XyPlot
-        title={`Score of the machine search: area ${area.toFixed(2)}`}
+        title={`Score of the machine search: area ${area.toFixed(3)}`}
         description={`Receiver operating characteristic over ${confirmed} confirmed and ${setAside} set-aside candidates. Area ${areaInWords}.`}
         fileName={`${fileName}-score`}
         square

@@ -14,7 +14,13 @@ describe('numbers of the Agreement page in words', () => {
   })
 
   it('have their units', () => {
-    expect([3.24, 12.6, 65].map(secondsInWords)).toEqual(['3.2 s', '13 s', '1 min 5 s'])
+    expect([3.24, 12.6, 59.6, 65, 119.6].map(secondsInWords)).toEqual([
+      '3.2 s',
+      '13 s',
+      '1 min 0 s',
+      '1 min 5 s',
+      '2 min 0 s',
+    ])
     expect([1.23, 1204].map(paceInWords)).toEqual(['1.2', '1,204'])
   })
 })

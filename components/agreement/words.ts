@@ -27,8 +27,9 @@ export function coefficientWithInterval(value: number | null, interval: Interval
 
 /** `3.2 s`, `1 min 5 s` */
 export function secondsInWords(seconds: number): string {
-  if (seconds < 60) return `${seconds.toFixed(seconds < 10 ? 1 : 0)} s`
-  return `${Math.floor(seconds / 60)} min ${Math.round(seconds % 60)} s`
+  const whole = Math.round(seconds)
+  if (whole < 60) return `${seconds.toFixed(seconds < 10 ? 1 : 0)} s`
+  return `${Math.floor(whole / 60)} min ${whole % 60} s`
 }
 
 /** `1.2`, `12`, `1,204`: looks a day. */

@@ -97,4 +97,5 @@ it('asks about bands that stand the wrong way round, and is quiet about others',
 it('warns that an acronym must be registered before it is published', () => {
   render(<CampaignForm action={vi.fn<FormAction>()} />)
   expect(screen.getByLabelText('Acronym')).toHaveAccessibleDescription(/must be registered/)
+  expect(screen.getByLabelText('Acronym')).toHaveAccessibleDescription(/^3 to 16 letters and digits/)
 })

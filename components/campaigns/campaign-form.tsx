@@ -43,7 +43,7 @@ export function CampaignForm({ action }: { action: FormAction }) {
           className="figures max-w-48"
           autoComplete="off"
           spellCheck={false}
-          hint="Begins every designation, as in SWS J001234.56-012345.6. Before designations are published the acronym must be registered with the IAU through the CDS, so that no two surveys use the same one."
+          hint="3 to 16 letters and digits that begin every designation, as in SWS J001234.56-012345.6. Before designations are published the acronym must be registered with the IAU through the CDS, so that no two surveys use the same one."
           error={errors?.acronym}
           required
         />

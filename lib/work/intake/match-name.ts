@@ -2,7 +2,7 @@ import type { ManifestRow } from '@/db/schema/intake'
 import type { NameMatcher } from './name-pattern'
 import { sameBand } from './name-pattern'
 import { bandOfFilter } from './band-of-header'
-import { noBand, type Refusal } from './refusals'
+import { foreignBand, type Refusal } from './refusals'
 
 /** What a manifest and the campaign's pattern tell of a file before it is opened; null is left to its header. */
 export interface NameMatch {
@@ -42,8 +42,9 @@ export function matchName(
   const said = [...new Set(rows.flatMap((row) => row.band ?? []))]
   if (said.length === 1) {
     const band = sameBand(said[0], bands) ?? bandOfFilter(said[0], bands)
-    const refusal = band === null ? noBand(`The manifest gives '${name}' the band '${said[0]}'.`, bands) : null
-    return { candidate, band, refusal, rows }
+    if (band !== null) return { candidate, band, refusal: null, rows }
+    const line = rows.find((row) => row.band !== null)?.line ?? 0
+    return { candidate, band, refusal: foreignBand(name, said[0], line, bands), rows }
   }
   return { candidate, band: said.length > 1 ? null : (byPattern?.band ?? null), refusal: null, rows }
 }

@@ -35,7 +35,25 @@ describe('what dropped files will become', () => {
     const none = await preview([], 'colour\nred\n')
     expect(none.rows[0].problem).toMatch(/needs a column 'file' or 'candidate'/)
     const line = await preview([], 'candidate,score\nSWS1,high\n')
-    expect(line.rows.at(-1)?.problem).toBe("Line 2: score is 'high'; a score is a number.")
+    expect(line.rows[0].problem).toBe("Line 2: score is 'high'; a score is a number.")
     expect(line.problems).toBe(1)
+    expect(line.rows[1]).toMatchObject({ name: 'list.csv', note: 'Of its lines, one has a problem.' })
+  })
+
+  it('advises to correct the line of the manifest that names an unknown band', async () => {
+    const { rows } = await preview(['x_g.fits'], 'file,candidate,band\ny.fits,SWS2,r\nx_g.fits,SWS1,zz\n')
+    expect(rows[0].problem).toMatch(
+      /the band 'zz'\. .* Correct the band in line 3 of the manifest and send it again, or/,
+    )
+    expect(rows[0].problem).not.toContain('with a band column')
+  })
+
+  it('shows what has a problem before what has none', async () => {
+    const { rows } = await preview(['a_g.fits', 'b_r.fits'], 'file,candidate,band\nb_r.fits,SWS1,zz\n')
+    expect(rows.map(({ name, problem }) => [name, problem !== null])).toEqual([
+      ['b_r.fits', true],
+      ['a_g.fits', false],
+      ['list.csv', false],
+    ])
   })
 })

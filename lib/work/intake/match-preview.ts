@@ -33,6 +33,7 @@ export interface ManifestInHand {
 }
 
 export interface Preview {
+  /** Those with a problem first. */
   rows: PreviewRow[]
   candidates: number
   problems: number
@@ -87,7 +88,12 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
         : 'Takes the place of the file of this name.'
     }
     if (kind === 'archive') row.note = 'Opened on the server; what is in it is matched there.'
-    if (kind === 'manifest') row.problem = manifests.find((manifest) => manifest.name === name)?.refusal ?? row.problem
+    if (kind === 'manifest') {
+      const manifest = manifests.find((one) => one.name === name)
+      row.problem = manifest?.refusal ?? row.problem
+      const faults = manifest?.problems.length ?? 0
+      if (faults > 0) row.note = `Of its lines, ${faults === 1 ? 'one has a problem' : `${faults} have problems`}.`
+    }
     if (kind !== 'fits') continue
     const match = matchName(name, matcher, byBase.get(baseName(name).toLowerCase()) ?? [], bands)
     for (const { id } of match.rows) used.add(id)
@@ -129,7 +135,9 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
       rows.push({ name, kind: 'line', candidate: null, band: null, raDeg: null, decDeg: null, problem, note: null })
     }
   }
-  return { rows, candidates: candidates.size, problems: rows.filter(({ problem }) => problem !== null).length }
+  const faulty = rows.filter(({ problem }) => problem !== null)
+  const sound = rows.filter(({ problem }) => problem === null)
+  return { rows: [...faulty, ...sound], candidates: candidates.size, problems: faulty.length }
 }
 
 const asRow = (entry: ManifestEntry, id: number): ManifestRow => ({

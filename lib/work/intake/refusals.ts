@@ -23,11 +23,19 @@ export function noCandidate(name: string, pattern: string): Refusal {
   }
 }
 
-export function noBand(tried: string, bands: readonly string[]): Refusal {
+const ADD_BAND = 'Put the band into the name as the pattern has it, or send a manifest with a band column.'
+
+export function noBand(tried: string, bands: readonly string[], advice = ADD_BAND): Refusal {
   return {
     fault: 'no-band',
-    reason: `${tried} This campaign has the ${bands.length === 1 ? 'band' : 'bands'} ${listOf(bands)}. Put the band into the name as the pattern has it, or send a manifest with a band column.`,
+    reason: `${tried} This campaign has the ${bands.length === 1 ? 'band' : 'bands'} ${listOf(bands)}. ${advice}`,
   }
+}
+
+/** The manifest names a band that the campaign does not have. */
+export function foreignBand(name: string, said: string, line: number, bands: readonly string[]): Refusal {
+  const advice = `Correct the band in line ${line} of the manifest and send it again, or leave that cell empty: then the file's name or its header tells the band.`
+  return noBand(`The manifest gives '${name}' the band '${said}'.`, bands, advice)
 }
 
 export function bandTaken(candidate: string, band: string, holder: string): Refusal {
