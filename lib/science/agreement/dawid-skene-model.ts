@@ -214,9 +214,12 @@ export class DawidSkeneModel {
         }
         for (let c = 0; c < classes; c++) {
           const value = term[c] / total
-          change = Math.max(change, Math.abs(value - posterior[at + c]))
+          // One without a grade follows the shares and says nothing of its own, not even that the fit still moves.
+          if (to > from) {
+            change = Math.max(change, Math.abs(value - posterior[at + c]))
+            shareSums[c] += value
+          }
           posterior[at + c] = value
-          if (to > from) shareSums[c] += value
         }
         if (to > from) this.logLikelihood += highest + Math.log(total)
       }

@@ -21,6 +21,9 @@ import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
  *
  *   first pass <id of the newest mark>
  *
+ * From what is in it the verdicts and the model follow. Candidates without an answer are not in it: nothing is said of them but
+ * by the first pass, and how many there are, in a run's summary, which follows from its newest candidate.
+ *
  * Numbers are written as JSON writes them. Repeats and answers of people who are left out are not in it, nor is an answer that was
  * corrected, so that a grade changed and changed back gives the same digest.
  */

@@ -14,7 +14,7 @@ export interface RunsModel {
 
 const MOST_KEPT = 32
 
-/** By the digest of the run's input, from which the model follows: the same in every process, and in every database of a test. */
+/** By run and the digest of its input: a run keeps its model for good, and the digest tells the databases of tests apart. */
 const kept = new Map<string, ReadyModel>()
 
 /**
@@ -24,7 +24,7 @@ const kept = new Map<string, ReadyModel>()
 export async function newestModel(db: Kysely<DB>, campaignId: number): Promise<RunsModel | null> {
   const run = await findNewestModel(db, campaignId)
   if (!run) return null
-  let model = kept.get(run.inputDigest)
+  let model = kept.get(keyOf(run))
   if (!model) {
     const stored = await findModel(db, run.runId)
     if (!stored) return null
@@ -33,8 +33,10 @@ export async function newestModel(db: Kysely<DB>, campaignId: number): Promise<R
   return { runId: run.runId, ruleId: run.ruleId, model }
 }
 
-function keep({ inputDigest }: StoredModel, model: ReadyModel): ReadyModel {
+const keyOf = ({ runId, inputDigest }: StoredModel) => `${runId} ${inputDigest}`
+
+function keep(run: StoredModel, model: ReadyModel): ReadyModel {
   if (kept.size >= MOST_KEPT) kept.delete(kept.keys().next().value as string)
-  kept.set(inputDigest, model)
+  kept.set(keyOf(run), model)
   return model
 }
