@@ -1,6 +1,7 @@
 'use client'
 
 import { useState } from 'react'
+import { counted } from '@/components/campaigns/in-words'
 import { BarPlot } from '@/components/plots/bar-plot'
 import { PEOPLE_FILLS, type Fill } from '@/components/plots/fills'
 import { ToolButton } from '@/components/table/tool-button'
@@ -48,13 +49,13 @@ export function DaysPart({
     return {
       label: shortDay(day),
       values,
-      reading: `${days.binDays === 1 ? '' : `${bin[0].toUpperCase()}${bin.slice(1)} from `}${shortDay(day)}: ${sum(values).toLocaleString('en')} looks${told.length ? ` (${told.join(', ')})` : ''}.`,
+      reading: `${days.binDays === 1 ? '' : `${bin[0].toUpperCase()}${bin.slice(1)} from `}${shortDay(day)}: ${counted(sum(values), 'look')}${told.length ? ` (${told.join(', ')})` : ''}.`,
     }
   })
   return (
     <BarPlot
       title={`Looks a ${bin}, by ${byPerson ? 'person' : 'letter'}`}
-      description={`${sum(days.bins.map(({ byLetter }) => sum(byLetter))).toLocaleString('en')} looks from ${days.bins[0].day} to ${days.bins[days.bins.length - 1].day}, stacked by ${byPerson ? 'person' : 'letter'}.`}
+      description={`${counted(sum(days.bins.map(({ byLetter }) => sum(byLetter))), 'look')} from ${days.bins[0].day} to ${days.bins[days.bins.length - 1].day}, stacked by ${byPerson ? 'person' : 'letter'}.`}
       fileName={`${fileName}-looks-by-${byPerson ? 'person' : 'letter'}`}
       xLabel={days.binDays === 1 ? 'Day (UTC)' : `First day of the ${bin} (UTC)`}
       yLabel={`Looks a ${bin}`}

@@ -11,7 +11,7 @@ export function ProgressPart({ progress }: { progress: FinishEstimate }) {
     <div className="flex max-w-3xl flex-col gap-3">
       <ProgressBar done={given} total={total} label="Looks given of those that are expected" />
       <p>
-        {given.toLocaleString('en')} looks given, {Math.round(remaining.expected).toLocaleString('en')} to come
+        {counted(given, 'look')} given, {Math.round(remaining.expected).toLocaleString('en')} to come
         {remaining.least < remaining.most
           ? ` (at least ${remaining.least.toLocaleString('en')}, at most ${remaining.most.toLocaleString('en')})`
           : ''}

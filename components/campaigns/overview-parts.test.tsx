@@ -34,6 +34,11 @@ it('tells which share of a fixed number of looks is given, and why some are not 
   )
 })
 
+it('has a sentence for one candidate too', () => {
+  const one = overviewBy({ method: 'mean' }, { given: 1, wanted: 6, waiting: 1 }, { candidates: 1, imaged: 1 })
+  expect(read(one)).toBe('17 % of the looks are given 1 of 6 wanted: 6 people for the one imaged candidate.')
+})
+
 it('tells how many candidates want more looks where grades decide how many there are', () => {
   const grading = { given: 208, wanted: 232, waiting: 7 }
   expect(read(overviewBy({ method: 'reliability' }, grading))).toBe(

@@ -28,8 +28,8 @@ export function GradingProgress({ overview, usesSheet = false }: { overview: Cam
     <Part title={wanted ? `${percent(given, wanted)} of the looks are given` : 'No looks yet'}>
       <ProgressBar done={given} total={wanted} label="Looks given" />
       <p className="text-small text-mute">
-        <Figure>{given}</Figure> of <Figure>{wanted}</Figure> wanted: {counted(gradesWanted, 'person', 'people')} for
-        each of {counted(overview.imaged, 'imaged candidate')}
+        <Figure>{given}</Figure> of <Figure>{wanted}</Figure> wanted: {counted(gradesWanted, 'person', 'people')} for{' '}
+        {overview.imaged === 1 ? 'the one imaged candidate' : `each of ${counted(overview.imaged, 'imaged candidate')}`}
         {wanted < gradesWanted * overview.imaged
           ? `, none at what a ruling has decided${usesSheet ? ' or the first pass has not sent on' : ''}`
           : ''}

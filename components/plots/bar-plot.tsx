@@ -6,7 +6,7 @@ import { fillOf, FillPatterns, isHatched, type Fill } from './fills'
 import type { PlotTable } from './plot-file'
 import { PlotFrame } from './plot-frame'
 import { PlotMark } from './plot-mark'
-import { labelEvery, linearScale, niceEnd } from './ticks'
+import { labelEvery, linearScale, niceEnd, niceTicks } from './ticks'
 
 export interface StackedBar {
   label: string
@@ -62,7 +62,7 @@ export function BarPlot({
               </text>
             </g>
           ))}
-          <YAxis box={box} scale={y} domain={[0, end]} label={yLabel} />
+          <YAxis box={box} scale={y} domain={[0, end]} label={yLabel} ticks={countTicks(end)} />
           {bars.map((bar, at) => {
             let from = 0
             return (
@@ -101,6 +101,9 @@ export function BarPlot({
   }
   return <PlotFrame {...frame} tools={tools} draw={draw} what="bar" />
 }
+
+/** Of a count there is no half. */
+const countTicks = (end: number): number[] => niceTicks(0, end, HEIGHT / 45).filter(Number.isInteger)
 
 function legendPlaces(parts: readonly { label: string }[], width: number) {
   let x = 0

@@ -177,6 +177,14 @@ describe('each kind of plot', () => {
     expect(screen.getByText('Looks a day')).toBeInTheDocument()
   })
 
+  it('draws an axis of counts without fractions', () => {
+    const bars = [{ label: '1 Mar', values: [1], reading: '1 Mar: 1' }]
+    render(<BarPlot {...frame} xLabel="Day" yLabel="Looks" parts={[{ label: 'A', fill: 'a' }]} bars={bars} />)
+    expect(screen.getByText('0')).toBeInTheDocument()
+    expect(screen.getByText('1')).toBeInTheDocument()
+    expect(screen.queryByText(/^0\.\d/)).toBeNull()
+  })
+
   it('draws a matrix with the number in each cell and hatches those that rest on little', () => {
     render(
       <MatrixPlot
