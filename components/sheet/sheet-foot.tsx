@@ -40,7 +40,7 @@ export function SheetFoot({
         </div>
       ) : page > 0 ? (
         <Button tone="lamp" onClick={rest > 0 ? onAsk : onFinish}>
-          {rest > 0 ? `Drop the other ${rest}` : 'Next page'} <KeyCap>N</KeyCap>
+          {rest === 0 ? 'Next page' : rest === page ? `Drop all ${rest}` : `Drop the other ${rest}`} <KeyCap>N</KeyCap>
         </Button>
       ) : null}
       {lastDropped === null || confirming ? null : (
