@@ -53,7 +53,8 @@ export function LeaveOutView({
           </ul>
         ) : null}
         <p className="text-small text-mute">
-          As the next consensus run would judge, with the rule in force and every grade up to now.
+          The next consensus run with {name}’s looks beside the same run without them, by the rule in force and every
+          grade up to now.
           {keptByRuling > 0
             ? ` ${counted(keptByRuling, 'verdict')} more would be another, under rulings that keep their candidates as they are.`
             : ''}

@@ -12,6 +12,7 @@ import type { DB } from '@/db/schema'
 import type { RunModel, RunSummary } from '@/db/schema/consensus'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { GRADE_POINTS, GRADES } from '@/lib/science/agreement/grades'
+import { OUTCOMES } from '@/lib/science/agreement/outcomes-at-once'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { fitModel } from './fit-model'
 import { InputDigest } from './input-digest'
@@ -41,6 +42,8 @@ export interface ComputedRun {
   model: RunModel | null
   /** Every verdict that differs from the candidate's verdict before. */
   changed: NewVerdict[]
+  /** Code of OUTCOMES of every row that was read; calibration stamps, which are not judged, are open. */
+  outcomes: Uint8Array
 }
 
 /**
@@ -68,7 +71,8 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
   const { ids, truth, table } = grades
   const counts: number[][] = []
   const changed: NewVerdict[] = []
-  const outcomes = { open: 0, split: 0, confirmed: 0, 'set aside': 0 }
+  const outcomes = new Uint8Array(ids.length)
+  const states = { open: 0, split: 0, confirmed: 0, 'set aside': 0 }
   const totals = { candidates: 0, grades: 0, cannotJudge: 0 }
   let row = 0
   for (let after = 0; ; await nextTurn()) {
@@ -90,7 +94,8 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
       const unseen = judged.judgement.grades + judged.judgement.cannotJudge === 0
       const { judgement, reason, differs } = reasonOfPass && unseen ? judgeByPass(judged, reasonOfPass) : judged
       counts.push(countPoints(table.cell.subarray(table.start[row], table.start[row + 1])))
-      outcomes[judgement.outcome] += 1
+      states[judgement.outcome] += 1
+      outcomes[row] = OUTCOMES.indexOf(judgement.outcome)
       totals.candidates += 1
       totals.grades += judgement.grades
       totals.cannotJudge += judgement.cannotJudge
@@ -108,16 +113,16 @@ export async function judgeRun(db: Kysely<DB>, input: RunInput, read: ReadRun): 
       }
     }
   }
-  const { 'set aside': setAside, ...states } = outcomes
+  const { 'set aside': setAside, ...others } = states
   const summary: RunSummary = {
     ...totals,
     graders: grades.peopleAtCandidates.size,
-    ...states,
+    ...others,
     setAside,
     changed: changed.length,
     ...measureAgreement(counts),
   }
-  return { inputDigest: read.inputDigest, summary, model, changed }
+  return { inputDigest: read.inputDigest, summary, model, changed, outcomes }
 }
 
 async function judgeFor(

@@ -54,6 +54,26 @@ describe('what leaving a grader out would change', () => {
     expect(back.moves).toEqual(expect.arrayContaining([{ from: 'open', to: 'confirmed', candidates: 1 }]))
   })
 
+  it('puts nothing down to the person that grades since the newest run change by themselves', async () => {
+    const { db, campaign, permit, graders } = await judgedScenario()
+    // Four N since the run: set aside with the fourth grader and without. 'own' is confirmed by A, A, A, B and by A, A, A.
+    for (const [name, letters] of Object.entries({ fresh: 'NNNN', own: 'AAAB' })) {
+      await giveGrades(db, campaign, await addImagedCandidate(db, campaign, name), graders, letters)
+    }
+    const { moves } = await previewLeaveOut(db, permit, graders[3].id)
+    expect(moves).not.toContainEqual(expect.objectContaining({ from: 'open' }))
+    expect(moves.reduce((sum, { candidates }) => sum + candidates, 0)).toBe(3)
+  })
+
+  it('counts a candidate that only this person’s grades since the newest run decide', async () => {
+    const { db, campaign, permit, graders } = await judgedScenario()
+    const id = await addImagedCandidate(db, campaign, 'two and one')
+    await giveGrades(db, campaign, id, [graders[0], graders[1], graders[3]], 'AAA')
+    const { moves } = await previewLeaveOut(db, permit, graders[3].id)
+    // It and lean are confirmed with the fourth grader's A, and have two grades without it.
+    expect(moves).toContainEqual({ from: 'confirmed', to: 'open', candidates: 2 })
+  })
+
   it('counts apart the verdicts under rulings, which keep their candidates as they are', async () => {
     const { db, permit, graders } = await judgedScenario()
     const torn = await db.selectFrom('candidate').select('id').where('name', '=', 'torn').executeTakeFirstOrThrow()
