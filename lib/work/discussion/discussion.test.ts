@@ -11,6 +11,7 @@ import { mentionsOfMe, waitingFor } from './list-mentions'
 import { LONGEST_MESSAGE, MessageInput } from './message-input'
 import { postMessage } from './post-message'
 import { readThread } from './read-thread'
+import { sentInWords } from './sent-in-words'
 
 let scenario: Scenario
 let candidate: number
@@ -160,6 +161,18 @@ describe('a mention', () => {
     await say(scenario.lead, '@avocet @egret @G90 @plover @oystercatcher')
     expect(await mails()).toEqual([])
     expect(await scenario.db.selectFrom('mention').selectAll().execute()).toEqual([])
+  })
+
+  it('of a name that nobody has is sent as text, and the answer says so', async () => {
+    expect(await say(scenario.lead, 'Ask @curlw, @curlew or a@b.example; @ G02.')).toMatchObject({
+      mentioned: ['curlew'],
+      unknown: ['curlw'],
+    })
+    expect(await mails()).toHaveLength(1)
+    const told = await say(scenario.lead, '@nobody and @nobody. @avocet')
+    expect(told).toMatchObject({ mentioned: [], unknown: ['nobody'] })
+    expect(sentInWords(told)).toBe('Sent. No mail went to @nobody: no grader or lead goes by that name here.')
+    expect(sentInWords(await say(scenario.lead, '@curlew!'))).toBe('Sent, with a mail to curlew.')
   })
 
   it('of the same person twice is one mail', async () => {

@@ -14,19 +14,34 @@ describe('a mention as it is written', () => {
     expect(resolveMentions('@Curlew sandpiper, ask @curlew (@avocet)!', PEOPLE, true)).toEqual({
       body: '@G03, ask @G02 (@G01)!',
       personIds: [3, 2, 1],
+      unknown: [],
     })
-    expect(resolveMentions('@g02 @G02', PEOPLE, true)).toEqual({ body: '@G02 @G02', personIds: [2] })
+    expect(resolveMentions('@g02 @G02', PEOPLE, true)).toEqual({ body: '@G02 @G02', personIds: [2], unknown: [] })
   })
 
   it('is none within a word, with a longer name behind it, or of nobody', () => {
-    for (const text of ['curlew@curlew.test', 'x@avocet', '@avocets', '@ruff', 'at @ noon']) {
-      expect(resolveMentions(text, PEOPLE, true)).toEqual({ body: text, personIds: [] })
+    for (const text of ['curlew@curlew.test', 'x@avocet', 'at @ noon', '(@)', '@']) {
+      expect(resolveMentions(text, PEOPLE, true)).toEqual({ body: text, personIds: [], unknown: [] })
     }
+    const text = '@avocets, @ruff and (@ruff, @grey-plover). @ruff'
+    expect(resolveMentions(text, PEOPLE, true)).toEqual({
+      body: text,
+      personIds: [],
+      unknown: ['avocets', 'ruff', 'grey-plover'],
+    })
   })
 
   it('goes by pseudonym alone for who may see no names, and for two people of one name', () => {
-    expect(resolveMentions('@curlew @G02', PEOPLE, false)).toEqual({ body: '@curlew @G02', personIds: [2] })
-    expect(resolveMentions('@knot @G05', PEOPLE, true)).toEqual({ body: '@knot @G05', personIds: [5] })
+    expect(resolveMentions('@curlew @G02', PEOPLE, false)).toEqual({
+      body: '@curlew @G02',
+      personIds: [2],
+      unknown: ['curlew'],
+    })
+    expect(resolveMentions('@knot @G05', PEOPLE, true)).toEqual({
+      body: '@knot @G05',
+      personIds: [5],
+      unknown: ['knot'],
+    })
     expect(labelsOf(PEOPLE, true).map(({ label }) => label)).toEqual([
       'avocet',
       'curlew',

@@ -22,22 +22,29 @@ export function labelsOf(people: readonly Named[], byName: boolean): { label: st
   }))
 }
 
-/** The text as it is kept, and who is mentioned in it, each once, in order. */
+/** What follows an @ that was meant for somebody. */
+const WRITTEN = /^[\p{L}\p{N}_]+(?:[.-][\p{L}\p{N}_]+)*/u
+
+/** The text as it is kept, who is mentioned in it, and the names written after an @ that nobody has; each once, in order. */
 export function resolveMentions(
   text: string,
   people: readonly Named[],
   byName: boolean,
-): { body: string; personIds: number[] } {
+): { body: string; personIds: number[]; unknown: string[] } {
   const labels = [
     ...labelsOf(people, byName),
     ...people.map(({ personId, pseudonym }) => ({ personId, label: pseudonym })),
   ].sort((a, b) => b.label.length - a.label.length)
   const personIds: number[] = []
+  const unknown: string[] = []
   let body = ''
   for (let at = 0; at < text.length; at++) {
-    const found = text[at] === '@' && (at === 0 || BEFORE.test(text[at - 1])) ? labelAt(text, at + 1, labels) : null
+    const begins = text[at] === '@' && (at === 0 || BEFORE.test(text[at - 1]))
+    const found = begins ? labelAt(text, at + 1, labels) : null
     const person = found && people.find(({ personId }) => personId === found.personId)
     if (!found || !person) {
+      const written = begins ? WRITTEN.exec(text.slice(at + 1))?.[0] : undefined
+      if (written && !unknown.includes(written)) unknown.push(written)
       body += text[at]
       continue
     }
@@ -45,7 +52,7 @@ export function resolveMentions(
     if (!personIds.includes(person.personId)) personIds.push(person.personId)
     at += found.label.length
   }
-  return { body, personIds }
+  return { body, personIds, unknown }
 }
 
 function labelAt(

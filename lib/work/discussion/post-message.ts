@@ -26,7 +26,7 @@ export async function postMessage(
   permit: CampaignPermit<'grade'>,
   candidateId: number,
   input: MessageInput,
-): Promise<{ messageId: number; mentioned: string[] }> {
+): Promise<{ messageId: number; mentioned: string[]; unknown: string[] }> {
   const { campaign, viewer, role } = permit
   return db.transaction().execute(async (transaction) => {
     const candidate = await findCandidate(transaction, campaign.id, candidateId)
@@ -38,7 +38,7 @@ export async function postMessage(
       )
     }
     const people = await listParticipants(transaction, campaign.id, candidateId)
-    const { body, personIds } = resolveMentions(input.body, people, role === 'lead')
+    const { body, personIds, unknown } = resolveMentions(input.body, people, role === 'lead')
     const mentioned = people.filter(({ personId }) => personIds.includes(personId) && personId !== viewer.id)
     const messageId = await insertMessage(transaction, {
       campaignId: campaign.id,
@@ -56,7 +56,8 @@ export async function postMessage(
       subject: candidate.name,
       detail: { message: messageId, mentioned: mentioned.map(({ personId }) => personId) },
     })
-    return { messageId, mentioned: mentioned.map(({ name, pseudonym }) => (role === 'lead' ? name : pseudonym)) }
+    const called = mentioned.map(({ name, pseudonym }) => (role === 'lead' ? name : pseudonym))
+    return { messageId, mentioned: called, unknown }
   })
 }
 

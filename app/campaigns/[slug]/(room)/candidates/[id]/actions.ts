@@ -9,6 +9,7 @@ import { parseAskForm } from '@/lib/work/discussion/ask-input'
 import { askLooks } from '@/lib/work/discussion/ask-looks'
 import { MessageInput } from '@/lib/work/discussion/message-input'
 import { postMessage } from '@/lib/work/discussion/post-message'
+import { sentInWords } from '@/lib/work/discussion/sent-in-words'
 import { withdrawAsk } from '@/lib/work/discussion/withdraw-ask'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { parseRulingForm } from '@/lib/work/rulings/ruling-input'
@@ -42,9 +43,9 @@ export async function postMessageAction(
 ): Promise<FormState> {
   try {
     const { db, permit } = await permitGrader(slug)
-    const { mentioned } = await postMessage(db, permit, candidateId, MessageInput.parse({ body: form.get('body') }))
+    const sent = await postMessage(db, permit, candidateId, MessageInput.parse({ body: form.get('body') }))
     revalidatePath(`/campaigns/${slug}`, 'layout')
-    return { done: mentioned.length > 0 ? `Sent, with a mail to ${mentioned.join(', ')}.` : 'Sent.' }
+    return { done: sentInWords(sent) }
   } catch (error) {
     return failedForm(error, form)
   }
