@@ -32,6 +32,7 @@ const groupOf = (ruled: number[], refused: number[] = []): GroupState => ({
       candidateId: id,
       name: `SWS000${id}`,
       rulingId: 70 + id,
+      asksWithdrawn: id === 1 ? 1 : 0,
       state: 'set aside' as const,
     })),
     refused: refused.map((id) => ({ candidateId: id, name: `SWS000${id}`, reason: 'plover has ruled meanwhile.' })),
@@ -100,6 +101,9 @@ describe('one ruling for the selected', () => {
     await user.click(panel().getByRole('radio', { name: 'Set aside' }))
     await user.type(panel().getByRole('textbox'), 'Discs.')
     await user.click(panel().getByRole('button', { name: 'Set aside (2)' }))
+    expect(
+      await screen.findByText(/1 asked look was withdrawn, and taking it back asks for none again\./),
+    ).toBeVisible()
     await user.click(await screen.findByRole('button', { name: 'Take them all back' }))
     expect(Object.fromEntries(undoGroupAction.mock.calls[0][1])).toEqual({ cases: '1:71,2:72' })
     expect(await screen.findByText(/2 candidates are by verdict again/)).toBeVisible()

@@ -96,6 +96,7 @@ export function GroupResult({
   const { state, pending, formProps } = useKeptForm(undo)
   const { ruled, refused } = group
   const undone = group.outcome === 'by verdict'
+  const withdrawn = ruled.reduce((sum, { asksWithdrawn }) => sum + asksWithdrawn, 0)
   return (
     <div role="status" className="flex flex-col gap-1.5 border-b border-line bg-raise px-5 py-2.5 text-small">
       <div className="flex flex-wrap items-center gap-x-3 gap-y-1">
@@ -108,6 +109,9 @@ export function GroupResult({
           ) : (
             'None was ruled on.'
           )}
+          {withdrawn > 0
+            ? ` ${counted(withdrawn, 'asked look was', 'asked looks were')} withdrawn, and taking it back asks for none again.`
+            : ''}
           {refused.length > 0 ? ` ${counted(refused.length, 'was', 'were')} refused:` : ''}
         </span>
         {ruled.length > 0 && !undone ? (

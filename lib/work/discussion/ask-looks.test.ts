@@ -183,7 +183,7 @@ describe('the answer', () => {
     await ask([curlew])
     const id = 'uid-00000009'
     await grade(curlew, 'A', { asked: true, id })
-    await grade(curlew, 'A', { asked: true, id })
+    expect(await grade(curlew, 'A', { asked: true, id })).not.toHaveProperty('stillAsked')
     expect(await rows()).toHaveLength(3)
     await grade(curlew, 'C', { asked: true })
     expect(await counted()).toEqual(['curlew C asked', 'dunlin N first'])
@@ -202,7 +202,8 @@ describe('the answer', () => {
 
   it('is not a correction of an earlier grade that arrives late: that one corrects, and the ask stays open', async () => {
     await ask([curlew])
-    await grade(curlew, 'C')
+    const [{ id }] = await asks()
+    expect(await grade(curlew, 'C')).toMatchObject({ replaced: expect.anything(), stillAsked: id })
     expect(await counted()).toEqual(['curlew C first', 'dunlin N first'])
     expect(await askedOfMe(scenario.db, await scenario.permit(curlew, 'read'))).toBe(1)
   })
@@ -261,7 +262,8 @@ describe('an ask ends', () => {
 
   it('when the candidate is confirmed or set aside by ruling', async () => {
     await ask([curlew, plover])
-    await ruleOnCandidate(scenario.db, await lead(), full, { outcome: 'set aside', grade: null, reason: 'A tail.' })
+    const setAside = { outcome: 'set aside', grade: null, reason: 'A tail.' } as const
+    expect(await ruleOnCandidate(scenario.db, await lead(), full, setAside)).toMatchObject({ asksWithdrawn: 2 })
     expect((await bench(curlew)).candidates).toEqual([])
     expect((await asks()).every(({ withdrawn_at }) => withdrawn_at !== null)).toBe(true)
   })

@@ -1,7 +1,7 @@
 import 'server-only'
 import { randomUUID } from 'node:crypto'
 import type { Kysely, Transaction } from 'kysely'
-import { setAskAnswered } from '@/db/queries/asked-looks'
+import { findOpenAsk, setAskAnswered } from '@/db/queries/asked-looks'
 import { requireRecipe } from '@/db/queries/campaigns'
 import {
   countLiveLeases,
@@ -44,6 +44,8 @@ export interface RecordedGrade {
   grade: GivenGrade
   /** The id of the grade that this call corrected. */
   replaced?: string
+  /** The id of a look that a lead still waits for: this corrected the earlier grade. To answer it, send it as `asked`. */
+  stillAsked?: number
 }
 
 /**
@@ -107,11 +109,13 @@ export async function recordGrade(
     if (ask || enough) {
       await requestConsensus(transaction, campaign.id, await consensusDelayMs(transaction, campaign.id, rule, row))
     }
-    return { row, replaced: corrected?.uid ?? null }
+    const open = corrected ? await findOpenAsk(transaction, candidateId, viewer.id) : null
+    return { row, replaced: corrected?.uid ?? null, stillAsked: open?.id }
   })
   return {
     grade: shapeGrade(recorded.row),
     ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
+    ...('stillAsked' in recorded && recorded.stillAsked ? { stillAsked: recorded.stillAsked } : {}),
   }
 }
 

@@ -18,6 +18,8 @@ import { RulingInput } from './ruling-input'
 export interface RulingAnswer {
   rulingId: number
   state: CandidateState
+  /** Asked looks that nobody has to give any more; a later ruling does not ask for them again. */
+  asksWithdrawn: number
 }
 
 /**
@@ -45,7 +47,8 @@ export async function ruleOnCandidate(
     const looksAsked = looksAskedBy(outcome, candidate, gradesWanted, own + others)
     const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
     const rulingId = await insertRuling(transaction, row)
-    if (outcome === 'confirmed' || outcome === 'set aside') await setAsksWithdrawn(transaction, { candidateId }, now)
+    const decides = outcome === 'confirmed' || outcome === 'set aside'
+    const asksWithdrawn = decides ? await setAsksWithdrawn(transaction, { candidateId }, now) : 0
     const result = await outcomeOf(transaction, candidate, ruling, rulingId)
     await applyStates(transaction, permit.campaign, [result], now)
     await recordEvent(transaction, {
@@ -55,7 +58,7 @@ export async function ruleOnCandidate(
       subject: candidate.name,
       detail: { ruling: rulingId, outcome, grade, from: candidate.state, to: result.state },
     })
-    return { rulingId, state: result.state }
+    return { rulingId, state: result.state, asksWithdrawn }
   })
 }
 

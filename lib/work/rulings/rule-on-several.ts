@@ -1,15 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import type { DB } from '@/db/schema'
-import type { CandidateState } from '@/db/schema/intake'
 import { Problem } from '@/lib/platform/problems/problem'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateNames } from './candidate-name'
-import { ruleOnCandidate } from './rule-on-candidate'
+import { ruleOnCandidate, type RulingAnswer } from './rule-on-candidate'
 import type { GroupRuling } from './group-input'
 
 export interface GroupOutcome {
-  ruled: { candidateId: number; name: string; rulingId: number; state: CandidateState }[]
+  ruled: ({ candidateId: number; name: string } & RulingAnswer)[]
   /** Those that kept their state, each with the sentence that says why. */
   refused: { candidateId: number; name: string; reason: string }[]
 }
