@@ -31,7 +31,7 @@ export function ThresholdField({
 }) {
   const id = useId()
   const { label, unit, hint, stops, inWords } = threshold
-  /** What is being typed, until it is a number that the slider took over. */
+  /** What is being typed, until the field is left with a number in it. */
   const [typed, setTyped] = useState<string | null>(null)
   const last = stops.length - 1
   const words = inWords?.(value)
@@ -56,7 +56,8 @@ export function ThresholdField({
               const number = numberOf(event.target.value)
               if (Number.isFinite(number)) onChange(number)
             }}
-            onBlur={() => setTyped(null)}
+            aria-describedby={wrong ? `${id}-wrong` : undefined}
+            onBlur={() => (wrong ? undefined : setTyped(null))}
             className="figures w-20 rounded-control border border-edge/60 bg-well px-2 py-0.5 text-right text-small aria-invalid:border-alarm"
           />
         </span>
@@ -85,6 +86,11 @@ export function ThresholdField({
           className={SLIDER}
         />
       </div>
+      {wrong ? (
+        <p id={`${id}-wrong`} role="alert" className="text-note text-alarm">
+          {typed?.trim() ? `‘${typed.trim()}’ is not a number` : 'A number is missing'}: the threshold stays at {value}.
+        </p>
+      ) : null}
       <p id={`${id}-hint`} className="text-note text-mute">
         {hint}
         {inForce !== null && inForce !== value ? <span> In force: {inForce}.</span> : null}

@@ -2,6 +2,7 @@
 import { DEFAULT_MEAN_RULE } from '@/lib/science/agreement/mean-rule'
 import { DEFAULT_RELIABILITY_RULE } from '@/lib/science/agreement/reliability-rule'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
+import { ruleProblems } from '@/lib/work/consensus/try-rule'
 
 export type Method = RuleInput['method']
 
@@ -126,6 +127,16 @@ export function valueOf(rule: RuleInput, name: string): number {
 
 export function withValue(rule: RuleInput, name: string, value: number): RuleInput {
   return { ...rule, [name]: value }
+}
+
+/** The most looks that a rule's form takes. */
+const MOST_LOOKS = 50
+
+/** What stands in the way of trying or making the rule, in a sentence; null where nothing does. */
+export function problemOf(rule: RuleInput): string | null {
+  const problem = ruleProblems(rule)[0]
+  if (problem) return problem
+  return rule.gradesWanted > MOST_LOOKS ? `No more than ${MOST_LOOKS} looks can be wanted of a candidate.` : null
 }
 
 /** Only what makes up the rule, without its version. */

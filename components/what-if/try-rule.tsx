@@ -9,7 +9,7 @@ import { Button } from '@/components/ui/button'
 import { Notice, VisualGradeCaution } from '@/components/ui/notice'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { qualityCurve } from '@/lib/work/consensus/quality-curve'
-import { ruleProblems, tryRule } from '@/lib/work/consensus/try-rule'
+import { tryRule } from '@/lib/work/consensus/try-rule'
 import type { WhatIfAbout, WhatIfColumns } from '@/lib/work/consensus/what-if-columns'
 import { ChangedList } from './changed-list'
 import { MakeRule } from './make-rule'
@@ -22,6 +22,7 @@ import { ThresholdField } from './threshold-field'
 import {
   addressOf,
   isSameRule,
+  problemOf,
   ruleFromAddress,
   startOf,
   THRESHOLDS,
@@ -48,7 +49,7 @@ function useAddress(rule: RuleInput, inForce: RuleInput): void {
 
 /** The tried rule, or while that cannot be used the last that could. */
 function useUsable(rule: RuleInput, inForce: RuleInput): { usable: RuleInput; problem: string | null } {
-  const problem = ruleProblems(rule)[0] ?? null
+  const problem = problemOf(rule)
   const [last, setLast] = useState(problem ? inForce : rule)
   if (!problem && last !== rule) setLast(rule)
   return { usable: problem ? last : rule, problem }
@@ -137,7 +138,7 @@ export function TryRule({
           ) : null}
           <div className="flex flex-wrap gap-3">
             <MakeRule
-              rule={rule}
+              rule={usable}
               trial={trial}
               version={inForce.version}
               disabled={same || problem !== null}

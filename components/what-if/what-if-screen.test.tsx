@@ -115,6 +115,23 @@ it('keeps the numbers of the last usable rule while thresholds do not fit togeth
   expect(screen.queryByRole('alert')).toBeNull()
 })
 
+it.each([
+  ['Non-lenses that may be confirmed, share', '-3', 'between 0 and 1'],
+  ['Non-lenses that may be confirmed, share', '0', 'between 0 and 1'],
+  ['Lenses that may be set aside, share', '1', 'between 0 and 1'],
+  ['Lenses that may be set aside, share', '0.9995', 'less than 1'],
+  ['Most looks, looks', '1000', 'No more than 50'],
+  ['Least grades, grades', 'abc', 'is not a number'],
+])('says what is wrong with a typed value and stays: %s %s', async (name, typed, says) => {
+  show({ method: 'reliability' })
+  const field = await screen.findByRole('textbox', { name })
+  await userEvent.clear(field)
+  await userEvent.type(field, typed)
+  await userEvent.tab()
+  expect((await screen.findByRole('alert')).textContent).toContain(says)
+  expect(screen.getByRole('heading', { level: 1 })).toBeTruthy()
+})
+
 it('makes the tried rule the rule only after a question that says how many change', async () => {
   show({ confirmMean: '1.5' })
   await heading('1 candidate would change')
