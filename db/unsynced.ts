@@ -2,6 +2,7 @@ import { open } from 'node:fs/promises'
 import path from 'node:path'
 import { sql, type Kysely } from 'kysely'
 import { syncFolder } from '@/lib/platform/storage/sync-folder'
+import { fileOf } from './file-of'
 import type { DB } from './schema'
 
 /**
@@ -25,10 +26,8 @@ const namedLogs = new WeakSet<Kysely<DB>>()
 
 /** Brings all that was committed to disk, in a thread beside the process's own. */
 export async function syncCommits(db: Kysely<DB>): Promise<void> {
-  const { rows } = await sql<{ name: string; file: string }>`pragma database_list`.execute(db)
-  const file = rows.find(({ name }) => name === 'main')?.file
-  // A database in memory has no file.
-  if (!file) return
+  const file = await fileOf(db)
+  if (file === null) return
   const log = await open(`${file}-wal`, 'r+')
   try {
     await log.sync()
