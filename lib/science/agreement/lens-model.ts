@@ -26,6 +26,19 @@ export const LENS_MODEL: Readonly<DawidSkeneOptions> = {
   startOfGrade: LENS_START,
 }
 
+/** What is known of the share of lenses before any grade counts as this many candidates. Our choice, no source. */
+const PRIOR = { share: 0.02, candidates: 1 }
+
+/**
+ * The share of lenses with one candidate of the prior in it, so that no grades make it certain that a search holds none, or only
+ * lenses. @param fitted share among the graded candidates, in [0, 1]; any number where there are none.
+ * @returns inside (0, 1).
+ */
+export function lensShareWithPrior(fitted: number, gradedCandidates: number): number {
+  const lenses = gradedCandidates > 0 ? gradedCandidates * fitted : 0
+  return (lenses + PRIOR.candidates * PRIOR.share) / (gradedCandidates + PRIOR.candidates)
+}
+
 /** How often a grader gives each grade, A to N, to lenses and to what is not a lens; each sums to 1. */
 export interface GraderRates {
   lens: ArrayLike<number>

@@ -3,21 +3,16 @@ import type { RunModel } from '@/db/schema/consensus'
 import { DawidSkeneModel } from '@/lib/science/agreement/dawid-skene-model'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { GRADES } from '@/lib/science/agreement/grades'
-import { LENS, LENS_MODEL, ratesOfGraders } from '@/lib/science/agreement/lens-model'
+import { LENS, LENS_MODEL, lensShareWithPrior, ratesOfGraders } from '@/lib/science/agreement/lens-model'
 import { newcomerRates } from '@/lib/work/queue/lens-estimate'
 import type { RunGrades } from './read-grades'
 
 const TOLERANCE = 1e-6
 const MOST_ITERATIONS = 1000
 
-/** What is known of the share of lenses before any grade counts as this many candidates. Our choice, no source. */
-const PRIOR = { share: 0.02, candidates: 1 }
-
 /**
  * Fits the reliability of the graders, from the votes on, so that the input alone decides the result: the EM of `fitDawidSkene` an
  * iteration a turn, for the process to do other work in between (15 ms an iteration for a million grades).
- *
- * The share of lenses has one candidate of the prior in it, so that no grades make it certain that a search holds none.
  */
 export async function fitModel(grades: RunGrades, leftOut: readonly number[]): Promise<RunModel> {
   const { table, truth, people } = grades
@@ -45,9 +40,8 @@ export async function fitModel(grades: RunGrades, leftOut: readonly number[]): P
     lens: Array.from(rates[grader].lens),
     notLens: Array.from(rates[grader].notLens),
   }))
-  const lenses = counts.gradedCandidates * em.shares[LENS] + PRIOR.candidates * PRIOR.share
   return {
-    lensShare: lenses / (counts.gradedCandidates + PRIOR.candidates),
+    lensShare: lensShareWithPrior(em.shares[LENS], counts.gradedCandidates),
     iterations,
     converged: change < TOLERANCE,
     logLikelihood: em.logLikelihood,

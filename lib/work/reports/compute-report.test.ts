@@ -6,6 +6,7 @@ import { LENS_MODEL } from '@/lib/science/agreement/lens-model'
 import { summariseGraders } from '@/lib/science/agreement/grader-summary'
 import { giveGrade } from '@/lib/work/consensus/_give-grade'
 import { leaveOut } from '@/lib/work/consensus/leave-out'
+import { readWhatIf } from '@/lib/work/consensus/what-if'
 import { computedReport, NOW, panelScenario, reportScenario } from './_report-scenario'
 
 describe('the agreement report of a campaign', () => {
@@ -56,12 +57,23 @@ describe('the agreement report of a campaign', () => {
     const report = await computedReport(await panelScenario())
     expect(report.fit.source).toBe('report')
     expect(report.fit.converged).toBe(true)
-    expect(report.fit.lensShare).toBeCloseTo(fit.classShares[0], 5)
+    // One candidate with the 2 % of the prior beside those of the panel.
+    const n = ratings.length
+    expect(report.fit.lensShare).toBeCloseTo((n * fit.classShares[0] + 0.02) / (n + 1), 5)
     for (const [grader, { lensesSeen, nonLensesSeen, weights }] of summariseGraders(fit).entries()) {
       expect(report.people[grader].lensesSeen.value).toBeCloseTo(lensesSeen.value, 4)
       expect(report.people[grader].nonLensesSeen.value).toBeCloseTo(nonLensesSeen.value, 4)
       expect(report.people[grader].letters[0].weight).toBeCloseTo(weights[0], 3)
     }
+  })
+
+  it('finds the share of lenses that trying a rule finds, where no run has stored a model', async () => {
+    const stamp = { letters: 'AA', truth: 'lens' as const }
+    const scenario = await reportScenario(['AB', 'NN', 'NC', 'NN', stamp, '', ''])
+    const { about } = await readWhatIf(scenario.db, await scenario.permit(scenario.lead, 'lead'))
+    const { fit } = await computedReport(scenario)
+    expect(fit.source).toBe('report')
+    expect(fit.lensShare).toBeCloseTo(about.lensShare!, 6)
   })
 
   it('leaves calibration stamps out of agreement, and counts grades as they stand: corrections once, repeats apart', async () => {

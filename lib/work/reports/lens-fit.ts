@@ -9,6 +9,7 @@ import {
   LENS,
   LENS_MODEL,
   LENS_PSEUDO_COUNTS,
+  lensShareWithPrior,
   NOT_A_LENS,
   ratesOfGraders,
   type GraderRates,
@@ -84,12 +85,6 @@ function startOf(sheet: GradeSheet, model: RunModel) {
   return { classShares: [model.lensShare, 1 - model.lensShare], confusion }
 }
 
-/** No grades make it certain that a search holds none, or only lenses: half a candidate is left. */
-function awayFromEnds(share: number, candidates: number): number {
-  const edge = 1 / (2 * (candidates + 1))
-  return Math.min(1 - edge, Math.max(edge, share))
-}
-
 function finish(
   sheet: GradeSheet,
   isOut: readonly boolean[],
@@ -115,7 +110,8 @@ function finish(
     change: 0,
   }
   const rates = ratesOfGraders(fit)
-  const lensShare = source === 'run' ? em.shares[LENS] : awayFromEnds(em.shares[LENS], sheet.candidates.length)
+  const lensShare =
+    source === 'run' ? em.shares[LENS] : lensShareWithPrior(em.shares[LENS], countGraded(sheet, included))
   const logOdds = new Float64Array(sheet.candidates.length).fill(logOddsOf(lensShare))
   for (let at = 0; at < sheet.answers; at++) {
     if (included[at]) logOdds[sheet.candidateOf[at]] += gradeWeight(rates[sheet.graderOf[at]], sheet.gradeOf[at])
@@ -126,6 +122,12 @@ function finish(
       : Number(sheet.truth[candidate] === LENS),
   )
   return { source, converged, lensShare, rates, logOdds, probability, fit }
+}
+
+/** Candidates of the search with a grade that counts. */
+function countGraded(sheet: GradeSheet, included: Uint8Array): number {
+  const graded = new Set(sheet.candidateOf.filter((_, at) => included[at] === 1))
+  return [...graded].filter((candidate) => sheet.truth[candidate] === UNKNOWN_TRUTH).length
 }
 
 /**
