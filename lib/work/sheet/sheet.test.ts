@@ -57,6 +57,13 @@ describe('the bench of a campaign that uses the sheet', () => {
     expect((await served(1)).toSorted()).toEqual([0, 1, 2, 3, 4])
   })
 
+  it('serves what a lead has asked more looks of, whatever the first pass says', async () => {
+    await scenario.mark(scenario.graders[0], [2], 'dropped')
+    await scenario.db.updateTable('candidate').set({ looks_asked: 1 }).where('id', '=', scenario.ids[2]).execute()
+    expect(await served(3)).toEqual([2])
+    expect(await lendNext(scenario.db, await grader(2), 1)).toMatchObject({ left: 1 })
+  })
+
   it('never drops what somebody has graded', async () => {
     await recordGrade(scenario.db, await grader(2), scenario.ids[3], GradeInput.parse({ grade: 'B' }))
     await scenario.mark(scenario.graders[0], [3], 'dropped')
