@@ -44,5 +44,6 @@ export function sheetOf(answers: readonly SheetAnswer[], graders = 1, truth: rea
     counts: Uint8Array.from(answers, () => 1),
     repeats: new Uint8Array(answers.length),
     isLook: Uint8Array.from(answers, ({ isLook }) => (isLook === false ? 0 : 1)),
+    isFirst: Uint8Array.from(answers, ({ isLook }) => (isLook === false ? 0 : 1)),
   }
 }

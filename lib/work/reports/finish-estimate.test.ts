@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest'
+import { giveGrade } from '@/lib/work/consensus/_give-grade'
 import { estimateFinish } from './finish-estimate'
 import { looksToCome } from './progress'
+import { computedReport, reportScenario } from './_report-scenario'
 
 const NOW = Date.parse('2026-03-08T12:00:00.000Z')
 const DAY = 86_400_000
@@ -79,7 +81,7 @@ describe('the looks to come', () => {
     expect(looksToCome(candidates, rule)).toEqual({ expected: 5, least: 5, most: 5 })
   })
 
-  it('are by reliability at least one, at most all, and expected as many as decided candidates took', () => {
+  it('are by reliability at least one, at most all, and expected from what each look decided of those that came to it', () => {
     const rule = { method: 'reliability', gradesWanted: 10, leastGrades: 2 } as const
     const candidates = [
       { ...candidate, given: 4, settled: 1 as const },
@@ -88,7 +90,19 @@ describe('the looks to come', () => {
       { ...candidate, given: 2 },
       { ...candidate, given: 8 },
     ]
-    // By hand: decided ones took 3 in the mean, so 3, 1 and 1 are expected; 2, 1 and 1 at least; 10, 8 and 2 at most.
-    expect(looksToCome(candidates, rule)).toEqual({ expected: 5, least: 4, most: 20 })
+    // By hand: the second look decided one of four, the fourth one of two, no other any. After three looks 1 + 6 / 2 = 4 are
+    // expected, after two 5, after none 1 + 1 + 3 / 4 of 5 = 5.75; after eight 2. At least 2, 1 and 1; at most 10, 8 and 2.
+    expect(looksToCome(candidates, rule)).toEqual({ expected: 12.75, least: 4, most: 20 })
+  })
+})
+
+describe('the pace', () => {
+  it('counts the looks that take a place, and no repeats or looks asked for beside them', async () => {
+    const scenario = await reportScenario(['A', 'B', 'C'], 2)
+    const { db, campaign, graders, ids } = scenario
+    await giveGrade(db, campaign, ids[0], graders[1], 'A', { occasion: 'asked' })
+    await giveGrade(db, campaign, ids[1], graders[0], 'B', { occasion: 'repeat' })
+    const { progress } = await computedReport(scenario, Date.parse('2026-01-02T12:00:00.000Z'))
+    expect(progress.lastDays).toEqual([0, 0, 0, 0, 0, 0, 3])
   })
 })

@@ -13,7 +13,7 @@ import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 
 /**
- * All that the reports of a campaign are computed from, as flat typed arrays: 20 bytes an answer. Graders and candidates are
+ * All that the reports of a campaign are computed from, as flat typed arrays: 24 bytes an answer. Graders and candidates are
  * numbered from 0; answers stand by grader and, of a grader, in the order in which they were given.
  */
 export interface GradeSheet {
@@ -36,6 +36,8 @@ export interface GradeSheet {
   repeats: Uint8Array
   /** 1 for a look, 0 for its correction */
   isLook: Uint8Array
+  /** 1 for a first look, which takes a place of the wanted number; repeats and looks asked for beside it take none */
+  isFirst: Uint8Array
 }
 
 /** Rows read before other work of the process gets its turn. */
@@ -103,6 +105,7 @@ class GrowingSheet {
     columns.givenAt[at] = Date.parse(row.givenAt)
     columns.seconds[at] = row.seconds ?? NaN
     columns.isLook[at] = row.replaces === null ? 1 : 0
+    columns.isFirst[at] = columns.isLook[at] === 1 && row.occasion === 'first' ? 1 : 0
     if (row.occasion === 'repeat') {
       const replaced = row.replaces === null ? undefined : this.repeatPlace.get(row.replaces)
       if (replaced !== undefined) columns.repeats[replaced] = 0
@@ -132,7 +135,7 @@ class GrowingSheet {
 
 type Columns = Pick<
   GradeSheet,
-  'candidateOf' | 'graderOf' | 'gradeOf' | 'givenAt' | 'seconds' | 'counts' | 'repeats' | 'isLook'
+  'candidateOf' | 'graderOf' | 'gradeOf' | 'givenAt' | 'seconds' | 'counts' | 'repeats' | 'isLook' | 'isFirst'
 >
 
 /** Columns of the given length, beginning with what the former hold. */
@@ -146,6 +149,7 @@ function makeColumns(length: number, former?: Columns): Columns {
     counts: new Uint8Array(length),
     repeats: new Uint8Array(length),
     isLook: new Uint8Array(length),
+    isFirst: new Uint8Array(length),
   }
   if (former) {
     for (const key of Object.keys(made) as (keyof Columns)[]) made[key].set(former[key].subarray(0, length))

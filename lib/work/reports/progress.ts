@@ -9,35 +9,56 @@ export function measureProgress(sheet: GradeSheet, rule: RuleInForce, now: numbe
   return estimateFinish(lookTimes(sheet), given, looksToCome(sheet.candidates, rule), now)
 }
 
+/** Of the looks that take a place: only they are among those to come. */
 function* lookTimes(sheet: GradeSheet): Generator<number> {
   for (let at = 0; at < sheet.answers; at++) {
-    if (sheet.isLook[at] && sheet.candidates[sheet.candidateOf[at]].truth === null) yield sheet.givenAt[at]
+    if (sheet.isFirst[at] && sheet.candidates[sheet.candidateOf[at]].truth === null) yield sheet.givenAt[at]
   }
 }
 
 /**
  * Looks that imaged candidates still want, unless a ruling or the estimate has decided them. By the mean rule that is what is
  * missing of the wanted number. By reliability a candidate stops at the first look that decides it: at the least that is one
- * look more (or what is missing of the least grades), at the most all of them, and what is expected is the mean number of looks
- * of the candidates that are decided already, less what is given.
+ * look more (or what is missing of the least grades), at the most all of them. What is expected goes by how many of the candidates
+ * that came to a look were decided by it, so that those which are not decided yet, and take longer, are in it.
  */
 export function looksToCome(
   candidates: readonly CandidateOfReport[],
   rule: Pick<RuleInForce, 'method' | 'gradesWanted' | 'leastGrades'>,
 ): FinishEstimate['remaining'] {
   const search = candidates.filter(({ truth, imaged }) => truth === null && imaged)
-  const decided = search.filter(({ settled, given }) => settled && given > 0)
-  const meanOfDecided =
-    decided.length > 0 ? decided.reduce((sum, { given }) => sum + given, 0) / decided.length : rule.gradesWanted
+  const expectedAfter = rule.method === 'mean' ? null : expectedLooks(search, rule.gradesWanted)
   const remaining = { expected: 0, least: 0, most: 0 }
   for (const { given, asked, settled, ruled } of search) {
     const wanted = Math.max(rule.gradesWanted, asked)
     if (ruled || settled || given >= wanted) continue
     const most = wanted - given
-    const least = rule.method === 'mean' ? most : Math.min(most, Math.max(1, rule.leastGrades - given))
+    const least = expectedAfter ? Math.min(most, Math.max(1, rule.leastGrades - given)) : most
     remaining.most += most
     remaining.least += least
-    remaining.expected += rule.method === 'mean' ? most : Math.min(most, Math.max(least, meanOfDecided - given))
+    remaining.expected += Math.min(most, Math.max(least, expectedAfter?.[given] ?? most))
   }
   return remaining
+}
+
+/**
+ * Looks that an undecided candidate with 0, 1, … looks has to expect, from the share that each look decides among those that came
+ * to it: the product-limit estimate of E. L. Kaplan & P. Meier (1958), JASA 53, 457, undecided candidates being its losses. A look
+ * that none has come to yet is taken to decide nothing.
+ */
+function expectedLooks(search: readonly CandidateOfReport[], wanted: number): Float64Array {
+  const came = new Float64Array(wanted + 2)
+  const decided = new Float64Array(wanted + 2)
+  for (const { given, settled } of search) {
+    const look = Math.min(given, wanted)
+    came[look] += 1
+    if (settled) decided[look] += 1
+  }
+  for (let look = wanted - 1; look > 0; look--) came[look] += came[look + 1]
+  const expected = new Float64Array(wanted + 1)
+  for (let look = wanted - 1; look >= 0; look--) {
+    const decides = came[look + 1] > 0 ? decided[look + 1] / came[look + 1] : 0
+    expected[look] = 1 + (1 - decides) * expected[look + 1]
+  }
+  return expected
 }
