@@ -21,6 +21,7 @@ const GRADE = {
   own: false,
   occasion: 'first' as const,
   informed: false,
+  leftOut: false,
   tags: [],
   remark: null,
   seconds: null,

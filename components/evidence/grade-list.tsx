@@ -41,6 +41,7 @@ export function GradeList({ grades }: { grades: EvidenceGrade[] }) {
           <span className="truncate">
             {grade.by}
             {grade.own ? <span className="text-mute"> (you)</span> : null}
+            {grade.leftOut ? <span className="text-note text-mute">, left out of the consensus</span> : null}
             {grade.occasion === 'asked' ? (
               <span className="text-note text-mute">
                 , asked for a look{grade.informed ? ', could see the others’ grades' : ''}

@@ -58,10 +58,10 @@ describe('why a verdict by reliability is as it is', () => {
     render(<WhyReliability why={WHY} verdict={VERDICT} />)
     const rows = within(screen.getByRole('table')).getAllByRole('rowheader')
     expect(rows.map((row) => row.textContent)).toEqual([
-      'Before any gradeshare of lenses 0.02',
+      'Before any gradeshare of lenses 0.0200',
       'Acurlewstrongly for a lens: odds times 30',
       'Ndunlin (you)strongly for a lens: odds times 30',
-      'Togetherprobability of a lens 0.16',
+      'Togetherprobability of a lens 0.156',
     ])
     const figures = screen.getAllByRole('row').map((row) => row.lastElementChild?.textContent)
     // ln(0.02 / 0.98) = -3.89; -3.89 + 3.40 - 1.20 = -1.69.
@@ -71,9 +71,20 @@ describe('why a verdict by reliability is as it is', () => {
   it('names the boundaries with the version of the rule, who is left out, and what would have changed it', () => {
     render(<WhyReliability why={WHY} verdict={VERDICT} />)
     expect(screen.getByText(/The rule \(version 3\)/)).toHaveTextContent(
-      'confirms from a probability of 0.95 (log odds +2.97) and sets aside down to 0.001 (−6.90), after 2 grades at least and 10 looks at most. 1 look could not judge, which adds nothing. Left out of the consensus, so that nothing of theirs counts: ruff.',
+      'confirms from a probability of 0.9510 (log odds +2.97) and sets aside down to 0.00100 (−6.90), after 2 grades at least and 10 looks at most. 1 look could not judge, which adds nothing. Left out of the consensus, so that nothing of theirs counts: ruff.',
     )
     expect(screen.getByText('Without the N of dunlin it would be confirmed (0.97).')).toBeVisible()
+  })
+
+  it('tells shares with digits enough that their logarithm is the weight', () => {
+    const rates = [
+      { by: 'curlew', grade: 'C' as const, ofLenses: 0.0958, ofOthers: 0.1946, learnedFrom: 240, calibration: 30 },
+    ]
+    render(<WhyReliability why={{ ...WHY, rates }} verdict={VERDICT} />)
+    // ln(0.0958 / 0.195) = -0.71
+    expect(screen.getByText(/gives C to/)).toHaveTextContent(
+      'gives C to 9.58 % of lenses and to 19.5 % of what is none',
+    )
   })
 
   it('tells what came since apart from the verdict', () => {

@@ -1,6 +1,6 @@
 import { counted } from '@/components/campaigns/in-words'
 import { logOddsOf } from '@/lib/science/agreement/posterior'
-import { probabilityBeside } from '@/lib/science/agreement/weight-words'
+import { probabilityBeside, probabilityWithOdds } from '@/lib/science/agreement/weight-words'
 import type { ReliabilityWhy, WhySince, WhyStep } from '@/lib/work/rulings/explain-reliability'
 import type { EvidenceVerdict } from '@/lib/work/rulings/candidate-evidence'
 import { LETTER_INK } from './grade-list'
@@ -51,7 +51,7 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
             <th scope="row" className={`${CELL} text-small font-normal`}>
               Before any grade
               <span className="block text-note text-mute">
-                share of lenses <span className="figures">{probabilityBeside(why.prior)}</span>
+                share of lenses <span className="figures">{probabilityWithOdds(why.prior)}</span>
               </span>
             </th>
             <td className="h-12 p-0">
@@ -67,9 +67,7 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
               Together
               <span className="block text-note font-normal text-mute">
                 probability of a lens{' '}
-                <span className="figures font-semibold text-text">
-                  {probabilityBeside(probability, confirm, setAside)}
-                </span>
+                <span className="figures font-semibold text-text">{probabilityWithOdds(probability)}</span>
               </span>
             </th>
             <td className="h-12 p-0">
@@ -88,9 +86,9 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
       </table>
       <p className="max-w-prose text-small text-mute">
         The rule (version {verdict.rule.version}) confirms from a probability of{' '}
-        <b className="figures font-semibold text-text">{probabilityBeside(confirm, probability)}</b> (log odds{' '}
+        <b className="figures font-semibold text-text">{probabilityWithOdds(confirm)}</b> (log odds{' '}
         <span className="figures">{signed(why.confirm.logOdds)}</span>) and sets aside down to{' '}
-        <b className="figures font-semibold text-text">{probabilityBeside(setAside, probability)}</b> (
+        <b className="figures font-semibold text-text">{probabilityWithOdds(setAside)}</b> (
         <span className="figures">{signed(why.setAside.logOdds)}</span>), after{' '}
         {counted(verdict.rule.leastGrades, 'grade')} at least and {counted(verdict.rule.gradesWanted, 'look')} at most.
         {why.cannotJudge > 0 ? ` ${counted(why.cannotJudge, 'look')} could not judge, which adds nothing.` : ''}
@@ -98,7 +96,7 @@ export function WhyReliability({ why, verdict }: { why: ReliabilityWhy; verdict:
           ? ` Left out of the consensus, so that nothing of theirs counts: ${why.leftOut.join(', ')}.`
           : ''}
       </p>
-      {why.since ? <Since since={why.since} /> : null}
+      {why.since ? <Since why={why} since={why.since} /> : null}
       {why.changes.length > 0 ? (
         <section className="flex flex-col gap-1">
           <h3 className="text-small font-semibold">What would have changed it</h3>
@@ -148,14 +146,17 @@ function StepRow({
 }
 
 /** What has come since the run: told apart, because only a run or a ruling changes a state. */
-function Since({ since }: { since: WhySince }) {
+function Since({ why, since }: { why: ReliabilityWhy; since: WhySince }) {
   const what = [
     since.newGrades > 0 ? `${counted(since.newGrades, 'more grade')}` : '',
     since.newRun ? 'newer reliabilities' : '',
   ].filter(Boolean)
   return (
     <p className="max-w-prose border-l-2 border-edge pl-3 text-small">
-      Since then {what.join(' and ')}: <b className="figures font-semibold">{probabilityBeside(since.probability)}</b>
+      Since then {what.join(' and ')}:{' '}
+      <b className="figures font-semibold">
+        {probabilityBeside(since.probability, why.confirm.probability, why.setAside.probability)}
+      </b>
       <span className="text-mute">
         {' '}
         ({since.outcome}, if a run took it in now). The verdict above stands until then.
@@ -165,7 +166,7 @@ function Since({ since }: { since: WhySince }) {
 }
 
 function RatesOf({ why }: { why: ReliabilityWhy }) {
-  const percent = (share: number) => `${Number((100 * share).toPrecision(2))} %`
+  const percent = (share: number) => `${Number((100 * share).toPrecision(3))} %`
   return (
     <details className="text-small">
       <summary className="min-h-6 text-mute">Where the weights come from</summary>

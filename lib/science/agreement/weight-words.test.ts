@@ -1,5 +1,11 @@
 import { describe, expect, it } from 'vitest'
-import { factorInWords, probabilityBeside, weightInWords } from '@/lib/science/agreement/weight-words'
+import { logOddsOf } from '@/lib/science/agreement/posterior'
+import {
+  factorInWords,
+  probabilityBeside,
+  probabilityWithOdds,
+  weightInWords,
+} from '@/lib/science/agreement/weight-words'
 
 describe('a weight in words', () => {
   it.each([
@@ -23,5 +29,17 @@ describe('a probability', () => {
     expect(probabilityBeside(0.9996)).toBe('0.9996')
     expect(probabilityBeside(0.912, 0.914)).toBe('0.912')
     expect(probabilityBeside(1)).toBe('1.00')
+  })
+})
+
+describe('a probability beside its log odds', () => {
+  it('has digits enough that the log odds can be found again from it', () => {
+    expect(probabilityWithOdds(0.0244)).toBe('0.0244')
+    expect(probabilityWithOdds(0.97916)).toBe('0.9792')
+    expect(probabilityWithOdds(1)).toBe('1.00')
+    for (let odds = -12; odds <= 12; odds += 0.037) {
+      const shown = Number(probabilityWithOdds(1 / (1 + Math.exp(-odds))))
+      expect(Math.abs(logOddsOf(shown) - odds)).toBeLessThan(0.0056)
+    }
   })
 })

@@ -50,6 +50,19 @@ export function probabilityBeside(probability: number, ...others: number[]): str
   return probability.toFixed(decimals)
 }
 
+/** What rounding the probability may do to log odds that are shown with two decimals. */
+const ODDS_ERROR = 0.0055
+
+/**
+ * A probability with so many digits, two decimals at least, ten at most, that its log odds come out within 0.0055 of the true
+ * ones: so that who does the sum again arrives at the log odds that stand beside it.
+ */
+export function probabilityWithOdds(probability: number): string {
+  const slope = probability * (1 - probability)
+  const decimals = slope > 0 ? Math.ceil(-Math.log10(2 * ODDS_ERROR * slope)) : 2
+  return probability.toFixed(Math.min(10, Math.max(2, decimals)))
+}
+
 export function countOf(number: number, noun: string): string {
   return `${number} ${noun}${number === 1 ? '' : 's'}`
 }

@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { findCandidate, findDesignation, listFilesOf } from '@/db/queries/candidates'
+import { listLeftOutNow } from '@/db/queries/left-out'
 import { listAnswersOf, listVerdictsOf, type EvidenceAnswer } from '@/db/queries/verdicts'
 import { listRulingsOf, listStateChanges } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
@@ -75,6 +76,8 @@ export interface EvidenceGrade {
   occasion: 'first' | 'asked'
   /** An asked look of somebody who could see the others' grades before. */
   informed: boolean
+  /** Left out of the consensus now: it does not count. A grader learns it of themselves only. */
+  leftOut: boolean
   tags: string[]
   remark: string | null
   seconds: number | null
@@ -154,13 +157,14 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
   const onlyOwn = permit.role === 'grader'
   const by = (person: { name: string; pseudonym: string | null }) =>
     named ? person.name : (person.pseudonym ?? 'a member')
-  const [answers, verdictRows, rulingRows, changes, designation, asked] = await Promise.all([
+  const [answers, verdictRows, rulingRows, changes, designation, asked, leftOut] = await Promise.all([
     listAnswersOf(db, candidate.id, { graderId: onlyOwn ? permit.viewer.id : undefined }),
     listVerdictsOf(db, candidate.id),
     listRulingsOf(db, candidate.id),
     listStateChanges(db, candidate.id),
     findDesignation(db, candidate.id),
     answeredPeople(db, candidate.id),
+    listLeftOutNow(db, permit.campaign.id),
   ])
   const verdicts = verdictRows.map(({ rule, ...verdict }) => ({ ...verdict, rule: ruleOf(rule) }))
   const rulings = rulingRows.map((row) => ({
@@ -192,7 +196,12 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     sourceRedshift: candidate.source_redshift,
     votes: countLetters(answers),
     grades: answers
-      .map((answer) => gradeOf(answer, by(answer), permit.viewer.id, asked.get(answer.personId)))
+      .map((answer) => ({
+        ...gradeOf(answer, by(answer), permit.viewer.id, asked.get(answer.personId)),
+        leftOut: leftOut.some(
+          ({ personId }) => personId === answer.personId && (!onlyOwn || personId === permit.viewer.id),
+        ),
+      }))
       .sort(surestFirst),
     verdict: verdict ? { ...verdict, reason: reasonInShort(verdict.reason) } : null,
     why: verdict ? await findWhy(db, candidate.id, verdict, reader) : null,
@@ -223,7 +232,7 @@ function gradeOf(
   by: string,
   viewerId: number,
   asked: { informed: boolean } | undefined,
-): EvidenceGrade {
+): Omit<EvidenceGrade, 'leftOut'> {
   return {
     id: answer.id,
     by,

@@ -114,6 +114,14 @@ describe('what would have changed it', () => {
     expect(changes('AN').join(' ')).not.toContain('any rule')
   })
 
+  it('tells a probability from the boundary that it does not reach', () => {
+    // Confirmed from 22.5 / 23.5 = 0.9574. Odds 128, and one more N of 0.175: 22.4, 0.9573.
+    const close = { lens: [0.4, 0.4, 0.15, 0.07], notLens: [0.05, 0.2, 0.3, 0.4] }
+    const answers = ['A', 'A', 'A'].map((grade) => ({ grade: grade as Answer, grader: 'ruff', rates: RATES }))
+    const sentences = verdictChanges({ rule: RULE, answers, lensShare: 0.2 }, close)
+    expect(sentences).toContain('One more grade of somebody new would make it open with N (0.9573).')
+  })
+
   it('keeps to the own grade of a reader who may learn no other weight', () => {
     const sentences = changes('AAA', (at) => at === 1)
     expect(sentences.join(' ')).toContain('Had dunlin given')

@@ -1,5 +1,6 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { giveGrade, giveGrades } from '@/lib/work/consensus/_give-grade'
+import { leaveOut } from '@/lib/work/consensus/leave-out'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
@@ -84,6 +85,19 @@ describe('the sum of a verdict by reliability', () => {
       (await candidateEvidence(db, await scenario.permit(viewer, 'read'), case3)).judgement?.why
     expect((await seen(lead))?.since).toMatchObject({ newGrades: 1 })
     expect(await seen(graders[0])).toMatchObject({ outcome: 'set aside', since: null })
+  })
+
+  it('marks the grades of somebody who is left out, for leads and viewers, and for a grader their own alone', async () => {
+    const { db, lead, reader, graders, permit } = scenario
+    await leaveOut(db, await permit(lead, 'lead'), { personId: graders[1].id, leftOut: true, reason: 'asleep' })
+    const marked = async (viewer: Viewer) => {
+      const { judgement } = await candidateEvidence(db, await permit(viewer, 'read'), id)
+      return judgement?.grades.filter(({ leftOut }) => leftOut).map(({ by }) => by)
+    }
+    expect(await marked(lead)).toEqual(['dunlin'])
+    expect(await marked(reader)).toEqual(['G03'])
+    expect(await marked(graders[0])).toEqual([])
+    expect(await marked(graders[1])).toEqual(['G03'])
   })
 
   it('tells apart what came since: the verdict stays, the live estimate moves', async () => {

@@ -10,6 +10,7 @@ import {
   type VerdictBasis,
 } from '@/lib/science/agreement/overturn-verdict'
 import { decideByReliability } from '@/lib/science/agreement/reliability-rule'
+import { probabilityInterval, waldBoundaries } from '@/lib/science/agreement/sequential-test'
 import { probabilityBeside } from '@/lib/science/agreement/weight-words'
 
 /** More sentences on other grades than this say no more. */
@@ -36,6 +37,12 @@ export function verdictChanges(
 
 const named = ({ answers }: VerdictBasis, at: number) => `the ${answers[at].grade} of ${answers[at].grader}`
 
+/** With digits enough to tell it from where the rule decides. */
+function besideBoundaries({ rule, lensShare }: VerdictBasis, probability: number): string {
+  const { confirm, setAside } = probabilityInterval(waldBoundaries(rule), lensShare)
+  return probabilityBeside(probability, confirm, setAside)
+}
+
 function withoutGrades(basis: VerdictBasis, mayTell: (answer: number) => boolean): string[] {
   const left = fewestToOverturn(basis)
   if (!left || left.length === 0 || !left.every(mayTell)) return []
@@ -44,7 +51,7 @@ function withoutGrades(basis: VerdictBasis, mayTell: (answer: number) => boolean
   const which = inARow(left.map((at) => named(basis, at)))
   const fewest =
     left.length === 1 ? `Without ${which}` : `It takes ${left.length} grades left out, ${which}: without them`
-  return [`${fewest} it would be ${outcome} (${probabilityBeside(probability)}).`]
+  return [`${fewest} it would be ${outcome} (${besideBoundaries(basis, probability)}).`]
 }
 
 /** 'Had curlew given C or N instead of A, it would be open.' What several graders could have done is one sentence. */
@@ -81,12 +88,12 @@ function oneMore(basis: VerdictBasis, newcomer: GraderRates, now: Outcome): stri
     const [low, high] = [outcomes.at(-1)!, outcomes[0]]
     return (
       `One more grade of somebody new would not change it: the probability would be between ` +
-      `${probabilityBeside(low.probability)} (N) and ${probabilityBeside(high.probability)} (A).`
+      `${besideBoundaries(basis, low.probability)} (N) and ${besideBoundaries(basis, high.probability)} (A).`
     )
   }
   const each = [...new Set(changing.map(({ outcome }) => outcome))].map((outcome) => {
     const grades = changing.filter((one) => one.outcome === outcome)
-    const letters = grades.map(({ grade, probability }) => `${grade} (${probabilityBeside(probability)})`)
+    const letters = grades.map(({ grade, probability }) => `${grade} (${besideBoundaries(basis, probability)})`)
     return `${outcome} with ${inARow(letters, 'or')}`
   })
   return `One more grade of somebody new would make it ${inARow(each)}.`
