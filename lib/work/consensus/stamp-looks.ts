@@ -2,17 +2,16 @@
 import type { StampAnswer } from '@/db/queries/what-if'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { CANNOT_JUDGE, gradeCode } from '@/lib/science/agreement/grade-table'
-import { LENS, LENS_PSEUDO_COUNTS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
+import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import { logOddsOf, probabilityOf } from '@/lib/science/agreement/posterior'
 import type { LookSeries } from '@/lib/science/agreement/replay-looks'
+import { weightWithoutItself } from '@/lib/science/agreement/weight-without-itself'
 import type { RunGrades } from './read-grades'
 
-const GRADES = 4
 const CLASSES = 2
 
 /**
- * A stamp's truth taught the reliabilities, and weighing its grades by what they taught would flatter: each is weighed by the
- * counts of its grader less itself. That the share of lenses and other graders' rates would move a little too is passed over.
+ * Each grade is weighed by the counts of its grader less itself.
  * @param evidence of each row of `grades`, under the model that is asked.
  * @param rows of the stamps, in the order of the series. @param answers by candidate, in the order given.
  */
@@ -38,7 +37,7 @@ export function stampLooksOf(
       weight.push(
         code === CANNOT_JUDGE || grader === undefined
           ? 0
-          : weightWithoutItself(counts, grader, code, grades.truth[row]),
+          : weightWithoutItself(counts, { grader, grade: code, truth: grades.truth[row] }),
       )
     }
     start.push(grade.length)
@@ -46,32 +45,19 @@ export function stampLooksOf(
   return { start: Int32Array.from(start), grade: Uint8Array.from(grade), weight: Float64Array.from(weight) }
 }
 
-/** How often each grader met each class, as far as it is known, and gave each grade, with the pseudo-counts of the model. */
+/** How often each grader met each class, as far as it is known, and gave each grade. */
 function countsOf({ table, truth, people }: RunGrades, lensShare: number, evidence: Float64Array): Float64Array {
-  const counts = Float64Array.from(
-    { length: people.length * CLASSES * GRADES },
-    (_, at) => LENS_PSEUDO_COUNTS[at % (CLASSES * GRADES)],
-  )
+  const { start, cell, grades } = table
+  const counts = new Float64Array(people.length * CLASSES * grades)
   const prior = logOddsOf(lensShare)
   for (let row = 0; row < table.candidates; row++) {
     const known = truth[row] !== UNKNOWN_TRUTH
     const lens = known ? Number(truth[row] === LENS) : probabilityOf(prior + evidence[row])
-    for (let entry = table.start[row]; entry < table.start[row + 1]; entry++) {
-      const grader = Math.floor(table.cell[entry] / GRADES)
-      const at = grader * CLASSES * GRADES + (table.cell[entry] % GRADES)
-      counts[at + LENS * GRADES] += lens
-      counts[at + NOT_A_LENS * GRADES] += 1 - lens
+    for (let entry = start[row]; entry < start[row + 1]; entry++) {
+      const at = Math.floor(cell[entry] / grades) * CLASSES * grades + (cell[entry] % grades)
+      counts[at + LENS * grades] += lens
+      counts[at + NOT_A_LENS * grades] += 1 - lens
     }
   }
   return counts
-}
-
-function weightWithoutItself(counts: Float64Array, grader: number, grade: number, truth: number): number {
-  const logRate = (c: number) => {
-    const from = (grader * CLASSES + c) * GRADES
-    const own = truth === c ? 1 : 0
-    const all = counts.subarray(from, from + GRADES).reduce((sum, count) => sum + count, 0)
-    return Math.log((counts[from + grade] - own) / (all - own))
-  }
-  return logRate(LENS) - logRate(NOT_A_LENS)
 }

@@ -1,14 +1,13 @@
 import { calibrationCurve } from '@/lib/science/agreement/calibration-curve'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { CANNOT_JUDGE } from '@/lib/science/agreement/grade-table'
-import { LENS, LENS_PSEUDO_COUNTS } from '@/lib/science/agreement/lens-model'
+import { LENS } from '@/lib/science/agreement/lens-model'
 import { logOddsOf, probabilityOf } from '@/lib/science/agreement/posterior'
+import { weightWithoutItself } from '@/lib/science/agreement/weight-without-itself'
 import type { GradeSheet } from './grade-sheet'
 import type { LensFit } from './lens-fit'
 import type { CalibrationReport } from './report-types'
 
-const GRADES = 4
-const CLASSES = 2
 /** Fewer, wider bins for few stamps, so that a bin has some. Our choice, no source. */
 const binsFor = (stamps: number) => (stamps < 100 ? 5 : 10)
 
@@ -52,29 +51,16 @@ export function measureCalibration(sheet: GradeSheet, fit: LensFit, isOut: reado
 }
 
 /** Sum of the weights of each graded stamp, every grade weighed by its grader's counts less that grade itself. */
-function evidenceWithoutItself(sheet: GradeSheet, fit: LensFit, isOut: readonly boolean[]): Map<number, number> {
+function evidenceWithoutItself(sheet: GradeSheet, { fit }: LensFit, isOut: readonly boolean[]): Map<number, number> {
   const evidence = new Map<number, number>()
-  const totals = rowTotals(fit)
   for (let at = 0; at < sheet.answers; at++) {
     const candidate = sheet.candidateOf[at]
     const grade = sheet.gradeOf[at]
-    const known = sheet.truth[candidate]
-    if (known === UNKNOWN_TRUTH || !sheet.counts[at] || grade === CANNOT_JUDGE || isOut[sheet.graderOf[at]]) continue
-    const logRate = (c: number) => {
-      const row = sheet.graderOf[at] * CLASSES + c
-      const own = known === c ? 1 : 0
-      const count = fit.fit.counts[row * GRADES + grade] + LENS_PSEUDO_COUNTS[c * GRADES + grade] - own
-      return Math.log(count / (totals[row] - own))
-    }
-    evidence.set(candidate, (evidence.get(candidate) ?? 0) + logRate(0) - logRate(1))
+    const grader = sheet.graderOf[at]
+    const truth = sheet.truth[candidate]
+    if (truth === UNKNOWN_TRUTH || !sheet.counts[at] || grade === CANNOT_JUDGE || isOut[grader]) continue
+    const weight = weightWithoutItself(fit.counts, { grader, grade, truth })
+    evidence.set(candidate, (evidence.get(candidate) ?? 0) + weight)
   }
   return evidence
-}
-
-function rowTotals({ fit }: LensFit): Float64Array {
-  const totals = new Float64Array(fit.graders * CLASSES)
-  for (let at = 0; at < fit.counts.length; at++) {
-    totals[Math.floor(at / GRADES)] += fit.counts[at] + LENS_PSEUDO_COUNTS[at % (CLASSES * GRADES)]
-  }
-  return totals
 }
