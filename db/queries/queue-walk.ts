@@ -74,6 +74,8 @@ export interface Walk {
   /** Candidates that may be found, and rows that are looked at; null for all. */
   limit: number
   most: number | null
+  /** Only what nobody else holds. */
+  free?: boolean
 }
 
 /** What may be lent to this person in a bucket, from a place on. */
@@ -93,7 +95,7 @@ export async function walkBucket(db: Kysely<DB>, asker: Asker, walk: Walk): Prom
 async function step(
   db: Kysely<DB>,
   asker: Asker,
-  { bucket, order, most }: Walk,
+  { bucket, order, most, free = false }: Walk,
   { range, sorted, limit }: { range: RawBuilder<SqlBool>; sorted: RawBuilder<unknown>; limit: number },
 ): Promise<WalkedCandidate[]> {
   const { index, key } = ALONG[order]
@@ -108,7 +110,7 @@ async function step(
         and first_pass = ${bucket.firstPass} and imaged_at is not null ${unsettled} and ${range}
       order by ${sorted} limit ${most ?? -1}
     ) candidate left join estimate on estimate.candidate_id = candidate.id
-    where ${lendable(asker)}
+    where ${lendable(asker, free)}
     limit ${limit}`.execute(db)
   return rows
 }
@@ -134,9 +136,9 @@ const othersLeases = ({ personId, now }: Asker) => sql<number>`(
     and other.person_id <> ${personId} and other.until > ${now})`
 
 /** Open to this person, with room for one more look, and not on their bench yet. */
-const lendable = (asker: Asker) => sql<SqlBool>`candidate.truth is null
+const lendable = (asker: Asker, free = false) => sql<SqlBool>`candidate.truth is null
   and not exists (select 1 from grade where grade.candidate_id = candidate.id and grade.person_id = ${asker.personId})
   and not exists (select 1 from lease own where own.candidate_id = candidate.id and own.person_id = ${asker.personId})
   and (candidate.ruling_id is null or not exists (select 1 from ruling
     where ruling.id = candidate.ruling_id and ruling.outcome in ('confirmed', 'set aside')))
-  and candidate.grades_given + ${othersLeases(asker)} < max(${asker.gradesWanted}, candidate.looks_asked)`
+  and candidate.grades_given + ${othersLeases(asker)} < ${free ? sql`candidate.grades_given + 1` : sql`max(${asker.gradesWanted}, candidate.looks_asked)`}`

@@ -136,6 +136,11 @@ async function listNext(
 const IN_REACH = 50
 const MOST_IN_REACH = 400
 
+async function listHeldToo(transaction: Kysely<DB>, asker: Asker, marks: WalkMarks) {
+  const others = await countOthersLeases(transaction, asker)
+  return walkQueue(transaction, asker, { order: 'look', limit: Math.min(IN_REACH + others, MOST_IN_REACH), marks })
+}
+
 /** Of the candidates whose next look tells most, those that a look of this grader settles likelier than another's. */
 async function listMostInformative(
   transaction: Kysely<DB>,
@@ -143,9 +148,9 @@ async function listMostInformative(
   { rule, marks }: { rule: Extract<RuleInForce, { method: 'reliability' }>; marks: WalkMarks },
   limit: number,
 ): Promise<QueuedCandidate[]> {
-  const others = await countOthersLeases(transaction, asker)
-  const reach = Math.min(IN_REACH + others, MOST_IN_REACH)
-  const rows = await walkQueue(transaction, asker, { order: 'look', limit: reach, marks })
+  const free = await walkQueue(transaction, asker, { order: 'look', limit: IN_REACH, marks, free: true })
+  // What somebody else holds comes behind all that nobody does, and costs more to look through.
+  const rows = free.length >= limit ? free : await listHeldToo(transaction, asker, marks)
   const run = await newestModel(transaction, asker.campaignId)
   const inReach = rows.map(({ evidence, probability, grades, ...row }) => ({
     ...row,

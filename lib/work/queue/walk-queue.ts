@@ -14,21 +14,21 @@ import type { WalkMark, WalkMarks } from './walk-marks'
 export async function walkQueue(
   db: Kysely<DB>,
   asker: Asker,
-  { order, limit, marks }: { order: WalkOrder; limit: number; marks: WalkMarks },
+  { order, limit, marks, free = false }: { order: WalkOrder; limit: number; marks: WalkMarks; free?: boolean },
 ): Promise<WalkedCandidate[]> {
   const walks = (await listOpenBuckets(db, asker)).map((bucket) => ({
     bucket,
-    mark: marks(asker, `${order} ${bucket.gradesGiven} ${bucket.firstPass}`),
+    mark: marks(asker, `${order} ${free} ${bucket.gradesGiven} ${bucket.firstPass}`),
   }))
   const found: WalkedCandidate[] = []
   for (const walk of walks) {
     const wanted = order === 'number' ? limit - found.length : limit
-    if (wanted > 0) found.push(...(await walkFromMark(db, asker, { ...walk, order, limit: wanted })))
+    if (wanted > 0) found.push(...(await walkFromMark(db, asker, { ...walk, order, limit: wanted, free })))
   }
   if (found.length === 0) {
     for (const { bucket, mark } of walks) {
       if (bucket.size > LONG && !mark.mayLookBack()) continue
-      found.push(...noted(mark, await walkBucket(db, asker, { bucket, order, from: null, limit, most: null })))
+      found.push(...noted(mark, await walkBucket(db, asker, { bucket, order, from: null, limit, most: null, free })))
     }
   }
   if (order !== 'number') found.sort((a, b) => b.key - a.key || a.id - b.id)
@@ -43,9 +43,10 @@ const LONG = 20_000
 async function walkFromMark(
   db: Kysely<DB>,
   asker: Asker,
-  { bucket, mark, order, limit }: { bucket: Bucket; mark: WalkMark; order: WalkOrder; limit: number },
+  { mark, ...sought }: { bucket: Bucket; mark: WalkMark; order: WalkOrder; limit: number; free: boolean },
 ): Promise<WalkedCandidate[]> {
-  const walk = { bucket, order, limit, from: null, most: null }
+  const { bucket, order, limit } = sought
+  const walk = { ...sought, from: null, most: null }
   if (!mark.place) return noted(mark, await walkBucket(db, asker, walk))
   const ahead = noted(mark, await walkBucket(db, asker, { ...walk, from: mark.place }))
   const enough = Math.min(limit, bucket.open)
