@@ -12,7 +12,9 @@ function waiting(card: CampaignCard): string {
   if (card.role === 'lead' && card.split) return `${counted(card.split, 'split')} to settle`
   if (card.role === 'viewer') return `${counted(card.confirmed ?? 0, 'confirmed candidate')}`
   if (card.imaged === 0) return 'The files are being read.'
-  if (card.asked) return asksInWords(card.asked)
+  if (card.asked) {
+    return `${asksInWords(card.asked)}${card.left ? `, ${counted(card.left, 'candidate')} left` : ''}`
+  }
   return card.left ? `${counted(card.left, 'candidate')} left for you` : 'Nothing is left for you to grade.'
 }
 

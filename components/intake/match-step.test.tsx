@@ -9,7 +9,10 @@ const height = Object.getOwnPropertyDescriptor(Element.prototype, 'clientHeight'
 beforeAll(() => void Object.defineProperty(Element.prototype, 'clientHeight', { configurable: true, value: 480 }))
 afterAll(() => void (height && Object.defineProperty(Element.prototype, 'clientHeight', height)))
 
-const file = (name: string, content = 'x') => ({ name, file: new File([content], name) })
+/** The first block of a FITS file. */
+const HEADER = 'SIMPLE  =                    T'.padEnd(2880)
+
+const file = (name: string, content = HEADER) => ({ name, file: new File([content], name) })
 const nothingHere = async (names: string[]): Promise<LookedUp> => ({
   files: names.map(() => null),
   told: names.map(() => null),
@@ -42,6 +45,13 @@ describe('the matching table before anything is sent', () => {
     expect(onTake).not.toHaveBeenCalled()
     await userEvent.click(screen.getByRole('button', { name: 'Show the 2 problems only' }))
     expect(screen.queryByRole('row', { name: /^SWS1_g.fits/ })).toBeNull()
+  })
+
+  it('tells files that are cut off or no FITS by their first bytes', async () => {
+    show([file('SWS1_g.fits'), file('SWS1_r.fits', 'hello'), file('SWS1_i.fits', HEADER.slice(0, 100))])
+    expect(await row(/SWS1_r.fits.*This is not a FITS file: it begins with "hello"/)).toBeInTheDocument()
+    expect(await row(/SWS1_i.fits.*It has 100 bytes, and a FITS header alone has 2880/)).toBeInTheDocument()
+    expect(screen.getByText('3 files for 1 candidate, 2 problems')).toBeInTheDocument()
   })
 
   it('has the focus when it opens, since the button that opened it is gone', async () => {
@@ -87,10 +97,10 @@ describe('the matching table before anything is sent', () => {
 
   it('passes on what the server has under the same name and size, and says what takes the place of another', async () => {
     const sha256 = 'a'.repeat(64)
-    const { onTake } = show([file('SWS1_g.fits', 'same'), file('SWS1_r.fits', 'longer')], async () => ({
+    const { onTake } = show([file('SWS1_g.fits'), file('SWS1_r.fits', `${HEADER}longer`)], async () => ({
       files: [
-        { sha256, bytes: 4, fate: 'imaged' },
-        { sha256, bytes: 4, fate: 'imaged' },
+        { sha256, bytes: 2880, fate: 'imaged' },
+        { sha256, bytes: 2880, fate: 'imaged' },
       ],
       told: [null, null],
     }))

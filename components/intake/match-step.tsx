@@ -14,6 +14,7 @@ import type { MatchingRules } from './how-matched'
 import { ManifestChoices } from './manifest-choices'
 import { MatchTable } from './match-table'
 import type { FileToSend } from './upload-queue'
+import { useFirstBytes } from './use-first-bytes'
 import { useMatch } from './use-match'
 
 /** The hash of the file of this name and size on the server, for comparing before it is sent. */
@@ -67,16 +68,17 @@ export function MatchStep({
 
   const checked = checkedPattern(typed)
   const pattern = checked.pattern ?? rules.pattern
+  const faults = useFirstBytes(files)
   const work = useMemo(
     () => ({
-      files: files.map(({ name, file }) => ({ name, bytes: file.size })),
+      files: files.map(({ name, file }, at) => ({ name, bytes: file.size, fault: faults.get(at) })),
       manifests: files.filter(({ name }) => kindOfName(name) === 'manifest'),
       chosen,
       pattern,
       bands: rules.bands,
       here,
     }),
-    [files, chosen, pattern, rules.bands, here],
+    [files, faults, chosen, pattern, rules.bands, here],
   )
   const { done, fault: matchFault, busy } = useMatch(work)
   const rows = useMemo(

@@ -40,7 +40,8 @@ export interface Preview {
 }
 
 export interface PreviewInput {
-  files: { name: string; bytes: number }[]
+  /** `fault`: what is wrong with a file as its first bytes show. */
+  files: { name: string; bytes: number; fault?: string }[]
   manifests: ManifestInHand[]
   pattern: string
   bands: string[]
@@ -66,7 +67,7 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
   const holders = new Map<string, string>()
   const rows: PreviewRow[] = []
   const candidates = new Set<string>()
-  for (const [index, { name, bytes }] of files.entries()) {
+  for (const [index, { name, bytes, fault }] of files.entries()) {
     const kind = kindOfName(name)
     const known = here?.files[index] ?? null
     const row: PreviewRow = {
@@ -95,6 +96,7 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
       if (faults > 0) row.note = `Of its lines, ${faults === 1 ? 'one has a problem' : `${faults} have problems`}.`
     }
     if (kind !== 'fits') continue
+    row.problem ??= fault ?? null
     const match = matchName(name, matcher, byBase.get(baseName(name).toLowerCase()) ?? [], bands)
     for (const { id } of match.rows) used.add(id)
     const told = match.rows.length === 0 ? (here?.told[index] ?? null) : null

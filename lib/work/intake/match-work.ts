@@ -3,7 +3,7 @@ import { readCsv, type CsvTable } from '@/lib/science/formats/csv'
 import type { LookedUp } from './look-up-files'
 import { manifestColumns, type ChosenColumns, type ManifestHeaders } from './manifest-columns'
 import { parseManifestTable } from './parse-manifest'
-import { previewMatches, type ManifestInHand, type Preview } from './match-preview'
+import { previewMatches, type ManifestInHand, type Preview, type PreviewInput } from './match-preview'
 
 /** A pattern as it was typed: what it is taken for, null for the default, or the sentence of what is wrong with it. */
 export function checkedPattern(typed: string): { pattern: string | null; fault: string | null } {
@@ -15,7 +15,7 @@ export function checkedPattern(typed: string): { pattern: string | null; fault: 
 
 /** What is asked of the worker each time something is changed; files are references, not their bytes. */
 export interface MatchWork {
-  files: { name: string; bytes: number }[]
+  files: PreviewInput['files']
   manifests: { name: string; file: Blob }[]
   chosen: Record<string, ChosenColumns>
   pattern: string
