@@ -22,6 +22,7 @@ function Cell({ value, below }: { value: string; below?: string | null }) {
 export function QualityTable({ trial, lensShare }: { trial: RuleTrial; lensShare: number | null }) {
   const { quality, counts, waiting } = trial.stamps
   const stamps = counts.lenses + counts.nonLenses
+  const wanting = `${counted(waiting, 'calibration stamp')} ${waiting === 1 ? 'wants' : 'want'} more looks`
   const none = trial.promised?.purity === null ? 'nothing would be confirmed' : null
   return (
     <section aria-label="Completeness and purity" className="flex flex-col gap-2">
@@ -60,16 +61,15 @@ export function QualityTable({ trial, lensShare }: { trial: RuleTrial; lensShare
         {stamps > 0 && quality ? (
           <>
             Confirmed of the stamps: {counts.lensesConfirmed} of {counts.lenses} lenses, {counts.nonLensesConfirmed} of{' '}
-            {counts.nonLenses} that are none
-            {waiting > 0 ? `; ${waiting} ${waiting === 1 ? 'wants' : 'want'} more looks` : ''}. Each is stopped at the
-            look at which the rule would stop a candidate, and weighed without what it taught of its graders. Intervals
-            hold 95 %. Purity is for {share(lensShare)} lenses among the candidates.
+            {counts.nonLenses} that are none. Each is stopped at the look at which the rule would stop a candidate, and
+            weighed without what it taught of its graders.
+            {waiting > 0
+              ? ` ${wanting} and are in none of these numbers, which are of those quick to decide.`
+              : ''}{' '}
+            Intervals hold 95 %. Purity is for {share(lensShare)} lenses among the candidates.
           </>
         ) : stamps + waiting > 0 ? (
-          <>
-            None of {counted(waiting, 'calibration stamp')} has the looks at which this rule would stop. Have them
-            graded, and the left column fills.
-          </>
+          <>{wanting} before this rule would stop. Have them graded, and the left column fills.</>
         ) : (
           <>
             This campaign has no calibration stamps, so nothing here is measured against a known truth. Put some among

@@ -3,6 +3,7 @@ import { cleanup, configure, fireEvent, render, screen, waitFor, within } from '
 import userEvent from '@testing-library/user-event'
 import { afterEach, beforeEach, expect, it, vi } from 'vitest'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
+import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import type { FormState } from '@/components/ui/form-state'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { encodeWhatIf } from '@/lib/work/consensus/what-if-columns'
@@ -15,9 +16,11 @@ vi.setConfig({ testTimeout: 60_000 })
 const RULE = RuleInput.parse({ method: 'mean', gradesWanted: 4, leastGrades: 2 })
 
 /** Three candidates: confirmed at a mean of 2.5, open at 1.5, set aside at 0. */
-function body(graded = true) {
+function body(graded = true, stamps: ('lens' | 'not a lens')[] = [], looks = 0) {
   const candidates = 3
-  const many = (values: number[]) => Uint16Array.from(graded ? values : values.map(() => 0))
+  const rows = candidates + stamps.length
+  const truths = stamps.map((truth) => (truth === 'lens' ? LENS : NOT_A_LENS))
+  const many = (values: number[]) => Uint16Array.from({ length: rows }, (_, row) => (graded ? (values[row] ?? 0) : 0))
   return gzipSync(
     encodeWhatIf({
       about: {
@@ -29,18 +32,23 @@ function body(graded = true) {
         leftOut: 0,
       },
       candidates,
-      ids: Int32Array.of(7, 8, 9),
-      state: Uint8Array.of(2, 0, 3),
-      ruled: new Uint8Array(candidates),
-      truth: new Int8Array(candidates).fill(UNKNOWN_TRUTH),
+      ids: Int32Array.of(7, 8, 9, ...stamps.map((_, at) => 10 + at)),
+      state: Uint8Array.of(2, 0, 3, ...stamps.map(() => 0)),
+      ruled: new Uint8Array(rows),
+      truth: Int8Array.of(...Array<number>(candidates).fill(UNKNOWN_TRUTH), ...truths),
       tallies: {
         looks: many([2, 2, 2]),
         grades: many([2, 2, 2]),
         points: Float64Array.from(many([5, 3, 0])),
         squaredPoints: Float64Array.from(many([13, 5, 0])),
-        evidence: Float64Array.of(5, 0.5, -6),
+        evidence: Float64Array.of(5, 0.5, -6, ...stamps.map(() => 0)),
       },
-      stampLooks: { start: Int32Array.of(0), grade: new Uint8Array(0), weight: new Float64Array(0) },
+      // Every look an A for a lens, an N for the others.
+      stampLooks: {
+        start: Int32Array.from({ length: stamps.length + 1 }, (_, at) => at * looks),
+        grade: Uint8Array.from(truths.flatMap((truth) => Array<number>(looks).fill(truth === LENS ? 0 : 3))),
+        weight: new Float64Array(stamps.length * looks),
+      },
     }),
   )
 }
@@ -159,6 +167,18 @@ it('says why the rule was not made, and keeps the thresholds', async () => {
   await userEvent.click(screen.getByRole('button', { name: 'Make this the rule' }))
   await userEvent.click(await screen.findByRole('button', { name: 'Save as version 4' }))
   expect((await screen.findByRole('alert')).textContent).toContain('came into force')
+})
+
+it('measures on calibration stamps that have the looks of the rule, and says of the others that they want more', async () => {
+  answer = () => new Response(new Uint8Array(body(true, ['lens', 'not a lens'], 4)))
+  show()
+  await heading('Nothing would change')
+  expect(screen.getByText(/1 of 1 lenses, 0 of 1 that are none/)).toBeTruthy()
+  expect(screen.queryByText(/more looks/)).toBeNull()
+  cleanup()
+  answer = () => new Response(new Uint8Array(body(true, ['lens', 'not a lens'], 3)))
+  show()
+  expect(await screen.findByText(/^2 calibration stamps want more looks before this rule would stop/)).toBeTruthy()
 })
 
 it('says that there is nothing measured without calibration stamps, and what to do', async () => {
