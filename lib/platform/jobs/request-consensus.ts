@@ -6,8 +6,9 @@ import { enqueueJob } from './enqueue-job'
 import { JOB } from './job-kinds'
 
 /**
- * Asks for a consensus run of the campaign; while one waits, asking again adds nothing but brings it forward. Here and not in the consensus room, so
- * that every room can ask, with the same kind, key and payload. The caller holds a permit and calls it in its transaction.
+ * Asks for a consensus run of the campaign; while one waits, asking again adds nothing but brings it forward. Here and not in
+ * the consensus room, so that every room can ask, with the same kind, key and payload. The caller holds a permit and calls it
+ * in its transaction.
  */
 export async function requestConsensus(db: Kysely<DB>, campaignId: number, delayMs = 0): Promise<void> {
   const uniqueKey = `${JOB.consensus}:${campaignId}`
