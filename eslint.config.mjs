@@ -10,6 +10,7 @@ const ROOMS = [
   'stamps',
   'calibration',
   'queue',
+  'sheet',
   'grading',
   'consensus',
   'discussion',
