@@ -1,6 +1,6 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
-import type { Estimate, RunModel } from '../schema/consensus'
+import type { RunModel } from '../schema/consensus'
 import type { GradeLetter } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
 import type { Json } from '../schema/values'
@@ -28,12 +28,6 @@ export async function findNewestModel(db: Kysely<DB>, campaignId: number): Promi
 export async function findModel(db: Kysely<DB>, runId: number): Promise<Json<RunModel> | null> {
   const row = await db.selectFrom('run').select('model').where('id', '=', runId).executeTakeFirst()
   return row?.model ?? null
-}
-
-export async function findEstimate(db: Kysely<DB>, candidateId: number): Promise<Estimate | null> {
-  return (
-    (await db.selectFrom('estimate').selectAll().where('candidate_id', '=', candidateId).executeTakeFirst()) ?? null
-  )
 }
 
 export interface StandingAnswer {

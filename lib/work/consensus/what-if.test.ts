@@ -1,8 +1,9 @@
-import { beforeEach, describe, expect, it } from 'vitest'
+import { beforeEach, describe, expect, it, vi } from 'vitest'
 import { OUTCOMES } from '@/lib/science/agreement/outcomes-at-once'
 import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { insertLeftOut } from '@/db/queries/left-out'
+import type * as WhatIfQueries from '@/db/queries/what-if'
 import { changeRule } from '@/lib/work/campaigns/change-settings'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
@@ -12,6 +13,17 @@ import { runConsensus } from './run-consensus'
 import { tryRule } from './try-rule'
 import { makeRule, readWhatIf, showCandidates } from './what-if'
 import { withProbabilities } from './what-if-columns'
+
+const between = vi.hoisted(() => ({ readings: [] as (() => Promise<unknown>)[] }))
+
+vi.mock('@/db/queries/what-if', async (original) => {
+  const queries = await original<typeof WhatIfQueries>()
+  const listForWhatIf: typeof queries.listForWhatIf = async (db, page) => {
+    await between.readings.shift()?.()
+    return queries.listForWhatIf(db, page)
+  }
+  return { ...queries, listForWhatIf }
+})
 
 let scenario: Scenario
 let ids: number[]
@@ -118,6 +130,22 @@ describe('readWhatIf', () => {
     for (const { id, probability } of estimates) {
       expect(columns.probabilities[columns.ids.indexOf(id)]).toBeCloseTo(probability, 12)
     }
+  })
+
+  it('reads again where a run comes in between grades and states, so that both are of the same grades', async () => {
+    const { db, campaign, graders } = scenario
+    await changeRule(db, await lead(), RuleInput.parse({ method: 'mean', gradesWanted: 4, leastGrades: 1 }))
+    between.readings = [
+      async () => {
+        await giveGrade(db, campaign, ids[5], graders[0], 'A')
+        await runConsensus(db, await lead())
+      },
+    ]
+    const rows = await readWhatIf(db, await lead())
+    expect(between.readings).toEqual([])
+    const row = rows.ids.indexOf(ids[5])
+    expect([OUTCOMES[rows.state[row]], rows.tallies.points[row]]).toEqual(['confirmed', 3])
+    expect(rows.about.gradesSinceRun).toBe(0)
   })
 
   it('counts a correction once and nothing of a grader who is left out', async () => {

@@ -11,7 +11,7 @@ import {
   type CandidateForWhatIf,
 } from '@/db/queries/what-if'
 import type { DB } from '@/db/schema'
-import type { RunModel } from '@/db/schema/consensus'
+import type { Run, RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
 import { UNKNOWN_TRUTH } from '@/lib/science/agreement/dawid-skene-options'
 import { OUTCOMES, tallyCandidates, type CandidateTallies } from '@/lib/science/agreement/outcomes-at-once'
@@ -29,14 +29,25 @@ import type { WhatIfAbout, WhatIfRows } from './what-if-columns'
 /** States read before other work of the process gets its turn. */
 const PAGE = 2000
 
+const ATTEMPTS = 3
+
 /**
  * Every candidate of the campaign in numbers, from the grades that count now: all that a rule needs to be tried without asking the
  * server again. Leads only: it holds what calibration stamps are. Graders who are left out count nowhere.
  */
 export async function readWhatIf(db: Kysely<DB>, permit: CampaignPermit<'lead'>): Promise<WhatIfRows> {
   const { id: campaignId } = permit.campaign
+  for (let attempt = 1; ; attempt++) {
+    const run = await findNewestRun(db, campaignId)
+    const rows = await readBeside(db, campaignId, run)
+    // A run that came in between has given states that rest on other grades than those that were read.
+    const newest = await findNewestRun(db, campaignId)
+    if (newest?.id === run?.id || attempt === ATTEMPTS) return rows
+  }
+}
+
+async function readBeside(db: Kysely<DB>, campaignId: number, run: Run | null): Promise<WhatIfRows> {
   const rule = await ruleInForce(db, campaignId)
-  const run = await findNewestRun(db, campaignId)
   const newest = await newestInput(db, campaignId)
   const leftOut = await listLeftOutPeople(db, campaignId, newest.newestLeftOutId)
   const out = new Set(leftOut)
