@@ -65,6 +65,20 @@ describe('what leaving a grader out would change', () => {
     expect(moves.reduce((sum, { candidates }) => sum + candidates, 0)).toBe(3)
   })
 
+  it('is the same when it is asked for again, and another once a grade or a ruling has come', async () => {
+    const { db, campaign, permit, graders } = await judgedScenario()
+    const first = await previewLeaveOut(db, permit, graders[3].id)
+    expect(await previewLeaveOut(db, permit, graders[3].id)).toEqual(first)
+    const id = await addImagedCandidate(db, campaign, 'two and one')
+    await giveGrades(db, campaign, id, [graders[0], graders[1], graders[3]], 'AAA')
+    const second = await previewLeaveOut(db, permit, graders[3].id)
+    expect(second.moves).toContainEqual({ from: 'confirmed', to: 'open', candidates: 2 })
+    await ruleOnCandidate(db, permit, id, { outcome: 'set aside', grade: null, reason: 'A spiral arm' })
+    const third = await previewLeaveOut(db, permit, graders[3].id)
+    expect(third.keptByRuling).toBe(1)
+    expect(third.moves).toContainEqual({ from: 'confirmed', to: 'open', candidates: 1 })
+  })
+
   it('counts a candidate that only this person’s grades since the newest run decide', async () => {
     const { db, campaign, permit, graders } = await judgedScenario()
     const id = await addImagedCandidate(db, campaign, 'two and one')

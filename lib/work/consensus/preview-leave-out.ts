@@ -55,13 +55,31 @@ export async function previewLeaveOut(
   const rule = ruleOf(await requireRule(db, campaignId))
   const input = { campaignId, rule, ...(await newestInput(db, campaignId)) }
   const looks = await countLooksOf(db, campaignId, personId)
-  const moved = looks > 0 ? differing(await judgeWithout(db, input, now), await judgeWithout(db, input, then)) : []
+  const moved = looks > 0 ? await movedBy(db, input, { now, then }) : []
   return {
     name: member.name,
     looks,
     leftOut: standing,
     ...(await countMoves(db, moved)),
   }
+}
+
+type Moved = { id: number; from: CandidateState; to: CandidateState }[]
+
+const MOST_KEPT = 20
+/** By database and input, since a page that is shown again asks for the same two runs, seconds each at half a million grades. */
+const kept = new WeakMap<Kysely<DB>, Map<string, Moved>>()
+
+async function movedBy(db: Kysely<DB>, input: RunInput, leftOut: { now: number[]; then: number[] }): Promise<Moved> {
+  const known = kept.get(db) ?? new Map<string, Moved>()
+  kept.set(db, known)
+  const key = JSON.stringify([input, leftOut])
+  const moved =
+    known.get(key) ?? differing(await judgeWithout(db, input, leftOut.now), await judgeWithout(db, input, leftOut.then))
+  known.delete(key)
+  known.set(key, moved)
+  if (known.size > MOST_KEPT) known.delete(known.keys().next().value as string)
+  return moved
 }
 
 interface JudgedRows {
@@ -78,7 +96,7 @@ async function judgeWithout(db: Kysely<DB>, input: RunInput, leftOut: number[]):
 }
 
 /** Both are of the same candidates, which do not depend on whose grades count. */
-function differing(now: JudgedRows, then: JudgedRows): { id: number; from: CandidateState; to: CandidateState }[] {
+function differing(now: JudgedRows, then: JudgedRows): Moved {
   const rows = Array.from(now.ids.keys()).filter((row) => now.outcomes[row] !== then.outcomes[row])
   return rows.map((row) => ({ id: now.ids[row], from: OUTCOMES[now.outcomes[row]], to: OUTCOMES[then.outcomes[row]] }))
 }
@@ -86,10 +104,7 @@ function differing(now: JudgedRows, then: JudgedRows): { id: number; from: Candi
 /** Candidates looked up by one statement. */
 const CHUNK = 2000
 
-async function countMoves(
-  db: Kysely<DB>,
-  moved: ReturnType<typeof differing>,
-): Promise<Pick<LeaveOutPreview, 'moves' | 'keptByRuling'>> {
+async function countMoves(db: Kysely<DB>, moved: Moved): Promise<Pick<LeaveOutPreview, 'moves' | 'keptByRuling'>> {
   const moves = new Map<string, StateMove>()
   let keptByRuling = 0
   for (let start = 0; start < moved.length; start += CHUNK) {
