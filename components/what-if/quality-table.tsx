@@ -12,7 +12,7 @@ const range = (interval: Interval | null | undefined) =>
 function Cell({ value, below }: { value: string; below?: string | null }) {
   return (
     <td className="py-1.5 pr-4 align-top">
-      <span className="figures text-title font-semibold">{value}</span>
+      <span className="figures text-title font-semibold whitespace-nowrap">{value}</span>
       {below ? <span className="block text-note text-mute">{below}</span> : null}
     </td>
   )
@@ -76,7 +76,8 @@ export function QualityTable({ trial, lensShare }: { trial: RuleTrial; lensShare
             the candidates: with 30 lenses and 30 others the intervals are about 15 points wide each way.
           </>
         )}{' '}
-        The right column is what the model promises if its probabilities are right.
+        The right column is what the model promises if its probabilities are right, of the grades given so far: what is
+        open is not confirmed. {quality ? 'The left one is of candidates that have all the looks they want.' : null}
       </p>
     </section>
   )
