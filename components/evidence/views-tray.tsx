@@ -41,13 +41,16 @@ export function ViewsTray({
   const hold = useHoldAndSwipe(setHeld, (step) => onChoose((chosen + step + views.length) % views.length))
   const shown = blinking || held ? before.previous : chosen
   const view = views[shown] ?? views[0]
+  const paired = views.length > ONE_COLUMN
   if (!view)
     return <div className="night grid aspect-square place-items-center rounded-tray bg-tray text-mute">No views</div>
   return (
     <div className="@container">
       <figure
-        style={{ '--slide': slideWidth(views.length) } as CSSProperties}
-        className="night grid gap-2 rounded-tray bg-tray p-2 text-text sm:grid-cols-[minmax(0,1fr)_var(--slide)]"
+        style={{ '--slide': slideWidth(views.length), '--pair': pairWidth(views.length) } as CSSProperties}
+        className={`night grid gap-2 rounded-tray bg-tray p-2 text-text sm:grid-cols-[minmax(0,1fr)_var(--slide)] ${
+          paired ? 'sm:@max-[36rem]:grid-cols-[minmax(0,1fr)_var(--pair)]' : ''
+        }`}
       >
         <div className="min-w-0">
           <div {...hold} className="relative aspect-square select-none overflow-hidden bg-black">
@@ -75,7 +78,12 @@ export function ViewsTray({
           </figcaption>
           <LightSection light={light} keys={keys} className="px-0.5 pt-1" />
         </div>
-        <ol aria-label="Views" className="flex gap-2 overflow-x-auto p-0.5 sm:flex-col sm:gap-1 sm:overflow-x-visible">
+        <ol
+          aria-label="Views"
+          className={`flex gap-2 overflow-x-auto p-0.5 sm:flex-col sm:gap-1 sm:overflow-x-visible ${
+            paired ? 'sm:@max-[36rem]:grid sm:@max-[36rem]:grid-cols-2 sm:@max-[36rem]:content-start' : ''
+          }`}
+        >
           {views.map((slide, index) => (
             <li key={slide.key} className="w-17 shrink-0 sm:w-full">
               <button
@@ -114,6 +122,15 @@ export function ViewsTray({
       </figure>
     </div>
   )
+}
+
+/** Slides that have room in one column beside a small picture; more of them stand in pairs there. */
+const ONE_COLUMN = 5
+
+/** Two columns beside a small picture, as high as it together with its caption. */
+function pairWidth(views: number): string {
+  const rows = Math.ceil(views / 2)
+  return `calc(2 * clamp(2.75rem, (100cqw - ${2 * rows}rem) / ${rows + 2}, 7rem) + 0.5rem)`
 }
 
 /**

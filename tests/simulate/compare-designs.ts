@@ -89,9 +89,12 @@ export async function compareDesigns(scenario: SearchScenario, options: CompareO
     const purity = product.purity ?? 0
     const toSpare = product.completeness - wanted.completeness + purity - wanted.purity
     if (isMatched && toSpare < LITTLE_TO_SPARE) break
+    // Until a catalogue matches goals are only raised: one that was reached stays.
+    const move = (goal: number, wanted: number, reached: number) =>
+      best?.isMatched || reached < wanted ? moveGoal(goal, wanted, reached) : goal
     goal = {
-      completeness: moveGoal(goal.completeness, wanted.completeness, product.completeness),
-      purity: moveGoal(goal.purity, wanted.purity, purity),
+      completeness: move(goal.completeness, wanted.completeness, product.completeness),
+      purity: move(goal.purity, wanted.purity, purity),
     }
   }
   if (!best) throw new RangeError('There must be one pass or more.')

@@ -18,7 +18,7 @@ const { values } = parseArgs({
     seed: { type: 'string', default: '1' },
     graders: { type: 'string', default: '20' },
     stamps: { type: 'string', default: '100' },
-    passes: { type: 'string', default: '4' },
+    passes: { type: 'string', default: '3' },
     'least-grades': { type: 'string', default: '1' },
     out: { type: 'string' },
   },
