@@ -69,7 +69,9 @@ export async function addJudgedCandidate(scenario: Scenario, name: string, judge
       startedBy: null,
       now: NOW,
     })
-    const ids = await insertVerdicts(transaction, run.id, [{ candidateId: id, grades: n, ...decision, probability: null }])
+    const ids = await insertVerdicts(transaction, run.id, [
+      { candidateId: id, grades: n, ...decision, probability: null },
+    ])
     const state: CandidateState = decision.outcome
     await applyVerdicts(
       transaction,
