@@ -15,7 +15,10 @@ const ROOMS = [
   'consensus',
   'discussion',
   'rulings',
+  'matching',
+  'measuring',
   'catalogue',
+  'releases',
   'reports',
 ]
 
