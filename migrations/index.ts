@@ -8,6 +8,7 @@ import * as reliability from './007-reliability'
 import * as jobHolder from './008-job-holder'
 import * as gradingRoom from './009-grading-room'
 import * as queueCounts from './010-queue-counts'
+import * as releases from './014-releases'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -20,4 +21,5 @@ export const migrations: Record<string, Migration> = {
   '008-job-holder': jobHolder,
   '009-grading-room': gradingRoom,
   '010-queue-counts': queueCounts,
+  '014-releases': releases,
 }

@@ -23,6 +23,13 @@ import type {
   StampTable,
 } from './intake'
 import type { InvitationTable, PersonTable } from './people'
+import type {
+  ReleaseAccessTable,
+  ReleaseCandidateTable,
+  ReleaseEntryTable,
+  ReleaseFileTable,
+  ReleaseTable,
+} from './releases'
 import type { AuditEventTable, JobTable, MailTable, SiteTable } from './platform'
 
 export interface DB {
@@ -60,6 +67,11 @@ export interface DB {
   ruling: RulingTable
   designation: DesignationTable
   entry: EntryTable
+  release: ReleaseTable
+  release_candidate: ReleaseCandidateTable
+  release_entry: ReleaseEntryTable
+  release_file: ReleaseFileTable
+  release_access: ReleaseAccessTable
   job: JobTable
   mail: MailTable
   audit_event: AuditEventTable
