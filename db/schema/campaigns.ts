@@ -12,6 +12,8 @@ export interface CampaignTable {
   bands: Json<string[]>
   /** How a file name tells candidate and band, such as `{candidate}_{band}.fits`; null takes that default. */
   name_pattern: string | null
+  /** Of 'flat LCDM' the next two hold; Planck 2018 has its own. */
+  cosmology: Generated<'flat LCDM' | 'Planck 2018'>
   /** km/s/Mpc */
   hubble_constant: Generated<number>
   omega_matter: Generated<number>

@@ -22,6 +22,7 @@ import type {
   PlaneTable,
   StampTable,
 } from './intake'
+import type { MeasurementTable } from './measuring'
 import type { InvitationTable, PersonTable } from './people'
 import type {
   ReleaseAccessTable,
@@ -65,6 +66,7 @@ export interface DB {
   message: MessageTable
   mention: MentionTable
   ruling: RulingTable
+  measurement: MeasurementTable
   designation: DesignationTable
   entry: EntryTable
   release: ReleaseTable
