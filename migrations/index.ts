@@ -8,6 +8,8 @@ import * as reliability from './007-reliability'
 import * as jobHolder from './008-job-holder'
 import * as gradingRoom from './009-grading-room'
 import * as queueCounts from './010-queue-counts'
+import * as toldTruth from './011-told-truth'
+import * as matching from './012-matching'
 import * as measuring from './013-measuring'
 import * as releases from './014-releases'
 
@@ -22,6 +24,8 @@ export const migrations: Record<string, Migration> = {
   '008-job-holder': jobHolder,
   '009-grading-room': gradingRoom,
   '010-queue-counts': queueCounts,
+  '011-told-truth': toldTruth,
+  '012-matching': matching,
   '013-measuring': measuring,
   '014-releases': releases,
 }

@@ -25,6 +25,8 @@ export interface CampaignTable {
   /** Practice stamps asked of a grader before the first candidate. */
   practice_wanted: Generated<number>
   uses_sheet: Generated<0 | 1>
+  /** How near two candidates must be to be proposed as one object. */
+  match_radius_arcsec: Generated<number>
   created_by: number
   created_at: IsoTime
 }

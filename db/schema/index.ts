@@ -22,6 +22,15 @@ import type {
   PlaneTable,
   StampTable,
 } from './intake'
+import type {
+  CandidateMatchTable,
+  MatchDecisionTable,
+  MatchDueTable,
+  MergeTable,
+  ObjectMatchTable,
+  ReferenceListTable,
+  ReferenceObjectTable,
+} from './matching'
 import type { MeasurementTable } from './measuring'
 import type { InvitationTable, PersonTable } from './people'
 import type {
@@ -66,6 +75,13 @@ export interface DB {
   message: MessageTable
   mention: MentionTable
   ruling: RulingTable
+  reference_list: ReferenceListTable
+  reference_object: ReferenceObjectTable
+  object_match: ObjectMatchTable
+  candidate_match: CandidateMatchTable
+  match_due: MatchDueTable
+  match_decision: MatchDecisionTable
+  merge: MergeTable
   measurement: MeasurementTable
   designation: DesignationTable
   entry: EntryTable
