@@ -166,6 +166,10 @@ const TRIGGERS = [
     when (old.ra_deg is not new.ra_deg or old.dec_deg is not new.dec_deg or old.truth is not new.truth)
       and (new.truth is null or old.truth is null)
     begin insert or ignore into match_due values (new.campaign_id, new.id); end`,
+  `create trigger candidate_matches_nothing after update of truth on candidate when new.truth is not null begin
+    delete from object_match where candidate_id = new.id;
+    delete from candidate_match where first_id = new.id;
+    delete from candidate_match where second_id = new.id; end`,
   // Rows that follow from a candidate go with it.
   `create trigger candidate_unmatched before delete on candidate begin
     delete from match_due where candidate_id = old.id and campaign_id = old.campaign_id;
@@ -184,7 +188,12 @@ const FILL = [
       json_object('campaignId', campaign_id), ${now}, ${now}, ${now} from match_due group by campaign_id`,
 ]
 
-const CANDIDATE_TRIGGERS = ['candidate_match_due', 'candidate_match_due_again', 'candidate_unmatched']
+const CANDIDATE_TRIGGERS = [
+  'candidate_match_due',
+  'candidate_match_due_again',
+  'candidate_matches_nothing',
+  'candidate_unmatched',
+]
 const MADE = ['merge', 'match_decision', 'match_due', 'candidate_match', 'object_match', 'reference_object']
 
 export async function up(db: Kysely<unknown>): Promise<void> {

@@ -4,6 +4,9 @@ export const JOB = {
   unpackArchives: 'unpack-archives',
   imageCandidates: 'image-candidates',
   paintStamps: 'paint-stamps',
+  readList: 'read-list',
+  matchList: 'match-list',
+  matchCandidates: 'match-candidates',
   consensus: 'consensus',
   sendMail: 'send-mail',
 } as const

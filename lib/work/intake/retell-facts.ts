@@ -18,6 +18,7 @@ import { imageCentre } from '@/lib/science/sky/image-centre'
 import type { Wcs } from '@/lib/science/sky/wcs'
 import { isoTime } from '@/lib/platform/clock'
 import { giveWay } from '@/lib/platform/jobs/give-way'
+import { requestMatching } from '@/lib/platform/jobs/request-matching'
 import { baseName } from './file-name'
 import { groupBy } from './group-by'
 import { manifestFacts, type ManifestFacts } from './manifest-facts'
@@ -39,6 +40,7 @@ export async function retellFacts(db: Kysely<DB>, campaignId: number, manifestId
     problems.push(...(await retell(db, campaignId, manifestId, bands, names.slice(start, start + PER_PAGE))))
     await giveWay()
   }
+  if (names.length > 0) await requestMatching(db, campaignId)
   return problems
 }
 

@@ -14,10 +14,14 @@ import type { DB } from '@/db/schema'
 import { unsynced } from '@/db/unsynced'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
+import { requestMatching } from '@/lib/platform/jobs/request-matching'
 import { isoTime } from '@/lib/platform/clock'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
 import { groupBy } from '@/lib/work/intake/group-by'
 import { NOT_IMAGED, type CandidateOutcome, type PlannedPlane } from './worker-tasks'
+
+/** Candidates that come in a row are matched together. */
+const MATCH_AFTER_MS = 2000
 
 export interface Campaigned {
   campaignId: number
@@ -58,6 +62,7 @@ async function write(
   const known = standing.filter(({ planes, stamps }) => planes.length > 0 || stamps !== null)
   const facts = known.map((outcome) => candidateFacts(outcome, factsOf(outcome.name), now))
   const ids = await upsertCandidates(transaction, campaignId, facts, now)
+  if (facts.length > 0) await requestMatching(transaction, campaignId, MATCH_AFTER_MS)
   const idOf = (name: string): number => {
     const id = ids.get(name)
     if (id === undefined) throw new Error(`Candidate ${name} was not written`)
