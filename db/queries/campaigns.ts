@@ -134,6 +134,14 @@ export async function setLooking(
   await db.updateTable('campaign').set(looking).where('id', '=', campaignId).execute()
 }
 
+export async function setCosmology(
+  db: Kysely<DB>,
+  campaignId: number,
+  cosmology: Pick<Campaign, 'cosmology' | 'hubble_constant' | 'omega_matter'>,
+): Promise<void> {
+  await db.updateTable('campaign').set(cosmology).where('id', '=', campaignId).execute()
+}
+
 export async function setNamePattern(db: Kysely<DB>, campaignId: number, namePattern: string | null): Promise<void> {
   await db.updateTable('campaign').set({ name_pattern: namePattern }).where('id', '=', campaignId).execute()
 }
