@@ -13,6 +13,8 @@ const LABELS: Record<ManifestColumn, string> = {
   score: 'Score',
   lensRedshift: 'Lens redshift',
   sourceRedshift: 'Source redshift',
+  truth: 'Truth (calibration)',
+  explanation: 'Explanation (practice)',
 }
 const NAMES = Object.keys(LABELS) as ManifestColumn[]
 

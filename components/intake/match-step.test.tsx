@@ -95,6 +95,18 @@ describe('the matching table before anything is sent', () => {
     expect(onTake.mock.calls[0][0][0]).toMatchObject({ name: 'list.csv', columns: '{"candidate":"myid"}' })
   })
 
+  it('says which files become calibration stamps, also by a column that is chosen for the truth', async () => {
+    const manifest = file('list.csv', 'name,truth,known\nSWS1,lens,0\nSWS2,,1\n')
+    show([manifest, file('SWS1_g.fits'), file('SWS2_g.fits')])
+    const said = '3 files for 2 candidates, 1 calibration stamp among them, no problem seen'
+    expect(await screen.findByText(said)).toBeInTheDocument()
+    expect(await row(/SWS1_g.fits/)).toHaveTextContent('stamp: lens')
+    expect(await row(/SWS2_g.fits/)).not.toHaveTextContent('stamp')
+    await userEvent.selectOptions(screen.getByLabelText('Truth (calibration)'), 'known')
+    expect(await row(/SWS1_g.fits.*stamp: not a lens/)).toBeInTheDocument()
+    expect(await row(/SWS2_g.fits.*stamp: lens/)).toBeInTheDocument()
+  })
+
   it('passes on what the server has under the same name and size, and says what takes the place of another', async () => {
     const sha256 = 'a'.repeat(64)
     const { onTake } = show([file('SWS1_g.fits'), file('SWS1_r.fits', `${HEADER}longer`)], async () => ({

@@ -108,6 +108,7 @@ export function MatchStep({
   }
 
   const problems = done?.preview.problems ?? 0
+  const stamps = done?.preview.stamps ?? 0
   return (
     <section
       aria-label="Files to be taken in"
@@ -116,7 +117,7 @@ export function MatchStep({
       <div className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1">
         <h2 ref={heading} tabIndex={-1} className="text-title font-semibold outline-none" aria-live="polite">
           {done
-            ? `${counted(files.length, 'file')} for ${counted(done.preview.candidates, 'candidate')}${problems > 0 ? `, ${counted(problems, 'problem')}` : ', no problem seen'}`
+            ? `${counted(files.length, 'file')} for ${counted(done.preview.candidates, 'candidate')}${stamps > 0 ? `, ${counted(stamps, 'calibration stamp')} among them` : ''}${problems > 0 ? `, ${counted(problems, 'problem')}` : ', no problem seen'}`
             : `Matching ${counted(files.length, 'file')}…`}
         </h2>
         <p className="text-note text-mute">{busy && done ? 'Matching…' : 'Nothing has been sent yet.'}</p>

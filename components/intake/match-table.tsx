@@ -79,6 +79,7 @@ function MatchRow({ row, index, top, height }: { row: PreviewRow; index: number;
       </span>
       <span role="cell" className="figures truncate" title={candidate ?? ''}>
         {candidate ?? <span className="text-mute">{row.kind === 'fits' ? 'by header' : ''}</span>}
+        {row.truth ? <span className="block text-note text-mute">stamp: {row.truth}</span> : null}
       </span>
       <span role="cell" className="figures">
         {band ?? ''}

@@ -65,6 +65,9 @@ export interface ManifestRowTable {
   score: number | null
   lens_redshift: number | null
   source_redshift: number | null
+  /** What its candidate is known to be, which makes it a calibration stamp, and what practice says of it. */
+  truth: 'lens' | 'not a lens' | null
+  explanation: string | null
 }
 export type ManifestRow = Selectable<ManifestRowTable>
 

@@ -31,10 +31,10 @@ describe('what is here under a name', () => {
   })
 
   it('comes with what manifests here say of it', async () => {
-    await intake.deliver('list.csv', 'file,candidate,band,ra,dec\nx1.fits,SWS9,r,150.5,2.5\n')
+    await intake.deliver('list.csv', 'file,candidate,band,ra,dec,truth\nx1.fits,SWS9,r,150.5,2.5,1\n')
     await intake.read()
     const { told } = await lookUp('night/x1.fits', 'x2.fits')
-    expect(told).toEqual([{ candidate: 'SWS9', band: 'r', raDeg: 150.5, decDeg: 2.5 }, null])
+    expect(told).toEqual([{ candidate: 'SWS9', band: 'r', raDeg: 150.5, decDeg: 2.5, truth: 'lens' }, null])
   })
 
   it('is asked for at most 5,000 names at a time', () => {

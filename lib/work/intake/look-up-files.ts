@@ -10,7 +10,7 @@ import { Problem } from '@/lib/platform/problems/problem'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { baseName, cleanFileName } from './file-name'
 import { groupBy } from './group-by'
-import { manifestFacts } from './manifest-facts'
+import { manifestFacts, type ManifestFacts } from './manifest-facts'
 import { matchName } from './match-name'
 import { nameMatcher } from './name-pattern'
 
@@ -30,7 +30,12 @@ export interface LookedUp {
   /** One for each name, in their order; null where nothing of that name is here, or its bytes are lost. */
   files: (KnownFile | null)[]
   /** What manifests here say of each; null where none names it. */
-  told: ({ candidate: string | null; band: string | null; raDeg: number | null; decDeg: number | null } | null)[]
+  told: (ToldOfFile | null)[]
+}
+
+export interface ToldOfFile extends Pick<ManifestFacts, 'raDeg' | 'decDeg' | 'truth'> {
+  candidate: string | null
+  band: string | null
 }
 
 const NAMES_PER_QUERY = 1000
@@ -59,8 +64,8 @@ export async function lookUpFiles(
       const match = name === null || rows.length === 0 ? null : matchName(name, matcher, rows, bands)
       if (match === null || match.rows.length === 0) answer.told.push(null)
       else {
-        const { raDeg, decDeg } = manifestFacts(match.rows)
-        answer.told.push({ candidate: match.candidate, band: match.band, raDeg, decDeg })
+        const { raDeg, decDeg, truth } = manifestFacts(match.rows)
+        answer.told.push({ candidate: match.candidate, band: match.band, raDeg, decDeg, truth })
       }
     }
   }

@@ -21,6 +21,9 @@ export const MANIFEST_COLUMNS = {
   score: ['score', 'probability', 'prob', 'rank', 'mlscore', 'cnnscore', 'lensscore', 'plens'],
   lensRedshift: ['lensredshift', 'zlens', 'zl', 'zd', 'lensz', 'redshiftlens'],
   sourceRedshift: ['sourceredshift', 'zsource', 'zs', 'zsrc', 'sourcez', 'redshiftsource'],
+  // Few spellings: it makes calibration stamps, and a 'label' is as often what a machine has guessed.
+  truth: ['truth', 'knowntruth', 'groundtruth', 'truelabel', 'trueclass'],
+  explanation: ['explanation', 'truthexplanation', 'explain'],
 } as const
 
 export type ManifestColumn = keyof typeof MANIFEST_COLUMNS

@@ -1,4 +1,5 @@
 import type { ManifestRow } from '@/db/schema/intake'
+import type { Truth } from './told-truth'
 
 /** What manifests tell of a candidate; null where none does. */
 export interface ManifestFacts {
@@ -8,6 +9,9 @@ export interface ManifestFacts {
   score: number | null
   lensRedshift: number | null
   sourceRedshift: number | null
+  /** Known of calibration stamps, which it makes them. */
+  truth: Truth | null
+  explanation: string | null
 }
 
 /** The newest line that tells something stands, fact by fact; right ascension and declination belong together. */
@@ -22,5 +26,7 @@ export function manifestFacts(rows: readonly ManifestRow[]): ManifestFacts {
     score: first('score'),
     lensRedshift: first('lens_redshift'),
     sourceRedshift: first('source_redshift'),
+    truth: first('truth'),
+    explanation: first('explanation'),
   }
 }

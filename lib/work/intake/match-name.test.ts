@@ -23,6 +23,8 @@ function row(fileName: string, told: Partial<ManifestRow> = {}): ManifestRow {
     score: null,
     lens_redshift: null,
     source_redshift: null,
+    truth: null,
+    explanation: null,
     ...told,
   }
 }

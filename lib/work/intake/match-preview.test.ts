@@ -48,6 +48,22 @@ describe('what dropped files will become', () => {
     expect(rows[0].problem).not.toContain('with a band column')
   })
 
+  it('says which will be calibration stamps, by file and by candidate, and counts each once', async () => {
+    const { rows, stamps, candidates } = await preview(
+      ['SWS1_g.fits', 'SWS1_r.fits', 'SWS2_g.fits', 'SWS3_g.fits'],
+      'file,candidate,truth\n,SWS1,lens\nSWS2_g.fits,,0\n,SWS9,1\n',
+    )
+    expect(rows.map(({ name, truth }) => [name, truth])).toEqual([
+      ['SWS1_g.fits', 'lens'],
+      ['SWS1_r.fits', 'lens'],
+      ['SWS2_g.fits', 'not a lens'],
+      ['SWS3_g.fits', null],
+      ['list.csv', null],
+      ['list.csv, line 4', 'lens'],
+    ])
+    expect([candidates, stamps]).toEqual([3, 2])
+  })
+
   it('shows what has a problem before what has none', async () => {
     const { rows } = await preview(['a_g.fits', 'b_r.fits'], 'file,candidate,band\nb_r.fits,SWS1,zz\n')
     expect(rows.map(({ name, problem }) => [name, problem !== null])).toEqual([

@@ -8,6 +8,7 @@ import { manifestFacts } from './manifest-facts'
 import { matchName } from './match-name'
 import { nameMatcher } from './name-pattern'
 import type { ManifestEntry } from './parse-manifest'
+import type { Truth } from './told-truth'
 
 /** What a dropped file will become, as far as names, manifests and the server's answer tell before it is sent. */
 export interface PreviewRow {
@@ -17,6 +18,8 @@ export interface PreviewRow {
   band: string | null
   raDeg: number | null
   decDeg: number | null
+  /** Set where it becomes a calibration stamp. */
+  truth: Truth | null
   /** Will be refused, or will not do what it seems to. */
   problem: string | null
   note: string | null
@@ -36,6 +39,8 @@ export interface Preview {
   /** Those with a problem first. */
   rows: PreviewRow[]
   candidates: number
+  /** Calibration stamps among them. */
+  stamps: number
   problems: number
 }
 
@@ -67,6 +72,7 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
   const holders = new Map<string, string>()
   const rows: PreviewRow[] = []
   const candidates = new Set<string>()
+  const stamps = new Set<string>()
   for (const [index, { name, bytes, fault }] of files.entries()) {
     const kind = kindOfName(name)
     const known = here?.files[index] ?? null
@@ -77,6 +83,7 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
       band: null,
       raDeg: null,
       decDeg: null,
+      truth: null,
       problem: null,
       note: null,
     }
@@ -107,10 +114,12 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
     const facts = manifestFacts([...match.rows, ...ofCandidate])
     row.raDeg = facts.raDeg ?? told?.raDeg ?? null
     row.decDeg = facts.decDeg ?? told?.decDeg ?? null
+    row.truth = facts.truth ?? told?.truth ?? null
     row.problem ??= match.refusal?.reason ?? null
     if (row.candidate === null)
       row.note ??= `Its name does not fit ${matcher.pattern}: its header must tell the candidate.`
     else candidates.add(row.candidate)
+    if (row.candidate !== null && row.truth !== null) stamps.add(row.candidate)
     if (row.candidate !== null && row.band !== null) {
       const place = `${row.candidate}\n${row.band}`
       const holder = holders.get(place)
@@ -128,18 +137,29 @@ export function previewMatches({ files, manifests, pattern, bands, here }: Previ
       band: entry.band,
       raDeg: entry.raDeg,
       decDeg: entry.decDeg,
+      truth: entry.truth,
       problem: null,
       note: entry.fileName === null ? null : `Names '${entry.fileName}', which is not among these files.`,
     })
   }
   for (const { name, problems } of manifests) {
     for (const problem of problems) {
-      rows.push({ name, kind: 'line', candidate: null, band: null, raDeg: null, decDeg: null, problem, note: null })
+      rows.push({
+        name,
+        kind: 'line',
+        candidate: null,
+        band: null,
+        raDeg: null,
+        decDeg: null,
+        truth: null,
+        problem,
+        note: null,
+      })
     }
   }
   const faulty = rows.filter(({ problem }) => problem !== null)
   const sound = rows.filter(({ problem }) => problem === null)
-  return { rows: [...faulty, ...sound], candidates: candidates.size, problems: faulty.length }
+  return { rows: [...faulty, ...sound], candidates: candidates.size, stamps: stamps.size, problems: faulty.length }
 }
 
 const asRow = (entry: ManifestEntry, id: number): ManifestRow => ({
@@ -157,4 +177,6 @@ const asRow = (entry: ManifestEntry, id: number): ManifestRow => ({
   score: entry.score,
   lens_redshift: entry.lensRedshift,
   source_redshift: entry.sourceRedshift,
+  truth: entry.truth,
+  explanation: entry.explanation,
 })

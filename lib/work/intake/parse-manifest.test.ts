@@ -23,6 +23,8 @@ describe('a manifest', () => {
         score: 0.97,
         lensRedshift: 0.41,
         sourceRedshift: 1.9,
+        truth: null,
+        explanation: null,
       },
     ])
   })
@@ -58,6 +60,44 @@ describe('a manifest', () => {
     const { entries, problems } = parse(`name,score\n${name},0.5\nSWS2,0.6\n`)
     expect(entries.map(({ candidate }) => candidate)).toEqual(['SWS2'])
     expect(problems).toEqual([`Line 2: the name of the candidate ${why}, so that nothing is taken from it.`])
+  })
+
+  it.each([
+    ['lens', ['lens', 'Lens', '1', '1.0', 'true', 'TRUE', 'yes', 'y']],
+    ['not a lens', ['nonlens', 'non-lens', 'Not a lens', 'no lens', '0', '0.0', 'false', 'no', 'n']],
+  ] as const)('takes %s in its usual spellings as truth', (truth, spellings) => {
+    const { entries, problems } = parse(`name,Truth\n${spellings.map((word, k) => `SWS${k},${word}`).join('\n')}\n`)
+    expect(problems).toEqual([])
+    expect(entries.map((entry) => entry.truth)).toEqual(spellings.map(() => truth))
+  })
+
+  it('has no truth where a cell is empty, and says which word it cannot take for one', () => {
+    const { entries, problems } = parse(
+      'name,truth,explanation\nSWS1,,\nSWS2,maybe,A ring.\nSWS3,2,\nSWS4,1,"Arc, counter-image."\n',
+    )
+    expect(entries.map(({ truth }) => truth)).toEqual([null, null, null, 'lens'])
+    expect(entries[3].explanation).toBe('Arc, counter-image.')
+    expect(problems).toEqual([
+      "Line 3: truth is 'maybe'; it is 'lens' or 'not a lens' (also 1 or 0, true or false, yes or no, nonlens). This line makes no calibration stamp.",
+      expect.stringMatching(/^Line 4: truth is '2'/),
+    ])
+  })
+
+  it('says where two lines tell two truths of one candidate', () => {
+    const { problems } = parse('file,name,truth\na_g.fits,SWS1,1\na_r.fits,SWS1,0\nb_g.fits,SWS2,0\nb_r.fits,SWS2,0\n')
+    expect(problems).toEqual(['Line 3: SWS1 is not a lens here and a lens on line 2. The last of them holds.'])
+  })
+
+  it('takes no label, class or score for a truth unless it is chosen as one', () => {
+    const text = new TextEncoder().encode('name,label,class,is_lens\nSWS1,1,1,1\n')
+    expect(parseManifest(text).entries[0].truth).toBeNull()
+    expect(parseManifest(text, { truth: 'is_lens' }).entries[0].truth).toBe('lens')
+  })
+
+  it('leaves out an explanation that is too long, and says so', () => {
+    const { entries, problems } = parse(`name,truth,explanation\nSWS1,1,${'x'.repeat(1001)}\n`)
+    expect(entries[0]).toMatchObject({ truth: 'lens', explanation: null })
+    expect(problems).toEqual(['Line 2: explanation has 1,001 characters; it has 1,000 at most, so it is left out.'])
   })
 
   it('names a line that has neither file nor candidate', () => {

@@ -1,6 +1,7 @@
 import { readCsv, type CsvTable } from '@/lib/science/formats/csv'
 import { parseDeclination, parseRightAscension } from '@/lib/science/sky/coordinates'
 import { baseName, UNSEEN } from './file-name'
+import { contradictions, explanationOf, truthOf, type Truth } from './told-truth'
 import { manifestColumns, type ChosenColumns, type ManifestColumn, type ManifestHeaders } from './manifest-columns'
 
 export interface ManifestEntry {
@@ -15,6 +16,10 @@ export interface ManifestEntry {
   score: number | null
   lensRedshift: number | null
   sourceRedshift: number | null
+  /** What its candidate is known to be: a calibration stamp. */
+  truth: Truth | null
+  /** What practice says of it after the answer. */
+  explanation: string | null
 }
 
 export interface ParsedManifest {
@@ -44,10 +49,11 @@ export function parseManifestTable(table: CsvTable, columns: ManifestHeaders): P
   if (columns.file === undefined && columns.candidate === undefined) {
     const shown = table.header.slice(0, 12).map((name) => (name.length > 40 ? `${name.slice(0, 40).trim()}…` : name))
     const found = shown.length > 0 ? `it has ${shown.join(', ')}` : 'it has none'
-    const reason = `A manifest needs a column 'file' or 'candidate' in its first line, and ${found}. It may also have band, ra, dec, pixel_scale, score, lens_redshift and source_redshift.`
+    const reason = `A manifest needs a column 'file' or 'candidate' in its first line, and ${found}. It may also have band, ra, dec, pixel_scale, score, lens_redshift, source_redshift, truth and explanation.`
     return { entries: [], problems, refusal: { fault: 'no-columns', reason } }
   }
   const entries = table.rows.flatMap(({ line, values }) => entryOf(line, values, columns, problems) ?? [])
+  problems.push(...contradictions(entries))
   return { entries, problems, refusal: null }
 }
 
@@ -98,6 +104,8 @@ function entryOf(
       (value) => value >= 0 && value < 20,
       'a redshift is a number from 0 to 20',
     ),
+    truth: truthOf(cell(values, columns.truth), columns.truth, fault),
+    explanation: explanationOf(cell(values, columns.explanation), columns.explanation, fault),
   }
 }
 

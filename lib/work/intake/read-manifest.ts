@@ -90,5 +90,7 @@ function rowOf(entry: ManifestEntry, campaignId: number, fileId: number): Omit<M
     score: entry.score,
     lens_redshift: entry.lensRedshift,
     source_redshift: entry.sourceRedshift,
+    truth: entry.truth,
+    explanation: entry.explanation,
   }
 }

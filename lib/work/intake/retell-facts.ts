@@ -23,6 +23,7 @@ import { baseName } from './file-name'
 import { groupBy } from './group-by'
 import { manifestFacts, type ManifestFacts } from './manifest-facts'
 import { rowsOfFile } from './match-name'
+import { tellTruths } from './tell-truths'
 
 const PER_PAGE = 500
 
@@ -87,13 +88,15 @@ async function retell(
   const byBase = groupBy(await listManifestRowsOfBases(db, campaignId, bases, manifestId), (row) =>
     (row.file_base ?? '').toLowerCase(),
   )
+  const rowsOfBase = (fileName: string): ManifestRow[] =>
+    rowsOfFile(fileName, byBase.get(baseName(fileName).toLowerCase()) ?? [])
   const problems: NewFileProblem[] = []
   const whole: (ManifestFacts & { name: string })[] = []
   const partial: (ManifestFacts & { name: string })[] = []
   for (const name of names) {
     const own = planes.get(name) ?? []
     const ofFiles = own
-      .flatMap(({ fileName }) => rowsOfFile(fileName, byBase.get(baseName(fileName).toLowerCase()) ?? []))
+      .flatMap(({ fileName }) => rowsOfBase(fileName))
       .filter(({ candidate }) => candidate === null || candidate === name)
     const rows: ManifestRow[] = [...(byName.get(name) ?? []), ...ofFiles]
     // A candidate without images has nothing else to go by, so it keeps what it has.
@@ -108,8 +111,20 @@ async function retell(
     }
   }
   const asFacts = (facts: ManifestFacts & { name: string }) => ({ ...facts, imagedAt: null })
-  await upsertCandidates(db, campaignId, whole.map(asFacts), isoTime(), 'withdraw')
-  await upsertCandidates(db, campaignId, partial.map(asFacts), isoTime())
+  const told = [...whole, ...partial.filter(({ truth }) => truth !== null)]
+  const refused = await db.transaction().execute(async (transaction) => {
+    await upsertCandidates(transaction, campaignId, whole.map(asFacts), isoTime(), 'withdraw')
+    await upsertCandidates(transaction, campaignId, partial.map(asFacts), isoTime())
+    return tellTruths(transaction, campaignId, told)
+  })
+  for (const { name, sentence } of refused) {
+    const lines = [
+      ...(byName.get(name) ?? []),
+      ...(planes.get(name) ?? []).flatMap(({ fileName }) => rowsOfBase(fileName)),
+    ]
+    const line = lines.find((row) => row.file_id === manifestId && row.truth !== null)?.line ?? null
+    problems.push({ line, sentence })
+  }
   return problems
 }
 

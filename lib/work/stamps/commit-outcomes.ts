@@ -18,6 +18,7 @@ import { requestMatching } from '@/lib/platform/jobs/request-matching'
 import { isoTime } from '@/lib/platform/clock'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
 import { groupBy } from '@/lib/work/intake/group-by'
+import { tellTruths, type ToldTruth } from '@/lib/work/intake/tell-truths'
 import { NOT_IMAGED, type CandidateOutcome, type PlannedPlane } from './worker-tasks'
 
 /** Candidates that come in a row are matched together. */
@@ -63,6 +64,8 @@ async function write(
   const facts = known.map((outcome) => candidateFacts(outcome, factsOf(outcome.name), now))
   const ids = await upsertCandidates(transaction, campaignId, facts, now)
   if (facts.length > 0) await requestMatching(transaction, campaignId, MATCH_AFTER_MS)
+  // What cannot be has been said of the manifest when it was read.
+  await tellTruths(transaction, campaignId, toldBy(known, factsOf))
   const idOf = (name: string): number => {
     const id = ids.get(name)
     if (id === undefined) throw new Error(`Candidate ${name} was not written`)
@@ -133,6 +136,16 @@ function candidateFacts(outcome: CandidateOutcome, manifest: ManifestFacts | und
     sourceRedshift: manifest?.sourceRedshift ?? null,
     imagedAt: outcome.stamps === null ? null : now,
   }
+}
+
+function toldBy(
+  outcomes: readonly CandidateOutcome[],
+  factsOf: (name: string) => ManifestFacts | undefined,
+): ToldTruth[] {
+  return outcomes.flatMap(({ name }) => {
+    const { truth = null, explanation = null } = factsOf(name) ?? {}
+    return truth === null ? [] : { name, truth, explanation }
+  })
 }
 
 /** Files with the same fate and reason are written together: nearly all are 'imaged' without a reason. */
