@@ -64,6 +64,7 @@ export function setLimit(
 }
 
 const PARTS: { key: keyof WholeRecipe; words: string }[] = [
+  { key: 'version', words: 'saturated cores without false colour' },
   { key: 'views', words: 'views' },
   { key: 'colour', words: 'colour' },
   { key: 'deep', words: 'deep' },

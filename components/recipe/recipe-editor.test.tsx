@@ -4,6 +4,7 @@ import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { defaultRecipe, type Recipe } from '@/lib/science/imaging/recipe'
 import { wholeRecipe } from './recipe-draft'
 import { RecipeEditor } from './recipe-editor'
+import { RecipeHistory } from './recipe-history'
 
 const refresh = vi.fn()
 vi.mock('next/navigation', () => ({ useRouter: () => ({ refresh }) }))
@@ -138,6 +139,22 @@ describe('the editor of the recipe', () => {
     expect(newest.textContent).toContain('222222222222')
     expect(newest.textContent).toContain('close field')
     expect(first.textContent).toContain('the first')
+  })
+
+  it('says that a version which only draws otherwise was made by Ringside', () => {
+    render(
+      <RecipeHistory
+        versions={[version(2, own), version(1, { ...own, version: 1 })]}
+        bands={BANDS}
+        busy={false}
+        onLook={vi.fn()}
+        onAgain={vi.fn()}
+      />,
+    )
+    const [, newest, first] = screen.getAllByRole('row')
+    expect(newest.textContent).toContain('saturated cores without false colour')
+    expect(newest.textContent).toContain('Ringside')
+    expect(first.textContent).toContain('avocet')
   })
 
   it('adds a candidate by name, and says when there is none', async () => {

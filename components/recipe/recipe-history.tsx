@@ -34,6 +34,8 @@ export function RecipeHistory({
         <tbody>
           {versions.map((version, index) => {
             const older = versions[index + 1]
+            // Such a version is made by the server at its start, in the name of whoever made the one before.
+            const isRaised = older !== undefined && older.recipe.version !== version.recipe.version
             const changed = older ? changedParts(older.recipe, version.recipe, bands) : []
             return (
               <tr key={version.version} className="h-row border-b border-line">
@@ -48,7 +50,7 @@ export function RecipeHistory({
                 </td>
                 <td className="min-w-40 pr-4">{older ? changed.join(', ') || 'nothing that shows' : 'the first'}</td>
                 <td className="whitespace-nowrap pr-4 text-mute">
-                  {version.author}, {moment(version.createdAt)}
+                  {isRaised ? 'Ringside' : version.author}, {moment(version.createdAt)}
                 </td>
                 <td className="whitespace-nowrap py-1 text-right">
                   {index === 0 ? null : (

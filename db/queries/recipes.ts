@@ -24,6 +24,23 @@ export async function findRecipe(db: Kysely<DB>, campaignId: number, version: nu
   return row ?? null
 }
 
+/** Ids of the campaigns whose recipe in force is of a drawing below this one. */
+export async function listCampaignsDrawnBefore(db: Kysely<DB>, drawing: number): Promise<number[]> {
+  const rows = await db
+    .selectFrom('recipe')
+    .select('campaign_id')
+    .where('version', '=', (e) =>
+      e
+        .selectFrom('recipe as newest')
+        .select((n) => n.fn.max('newest.version').as('version'))
+        .whereRef('newest.campaign_id', '=', 'recipe.campaign_id'),
+    )
+    .where(sql<number>`json_extract(recipe.parameters, '$.version')`, '<', drawing)
+    .orderBy('campaign_id')
+    .execute()
+  return rows.map(({ campaign_id }) => campaign_id)
+}
+
 export async function listRecipesById(db: Kysely<DB>, ids: readonly number[]): Promise<RecipeRow[]> {
   if (ids.length === 0) return []
   return db.selectFrom('recipe').selectAll().where('id', 'in', ids).execute()

@@ -9,6 +9,7 @@ import { log } from '@/lib/platform/log'
 import { blobs } from '@/lib/platform/storage/blobs'
 import { jobLoops } from './job-handlers'
 import { makeSetupCode } from './people/setup-code'
+import { raiseRecipes } from './stamps/raise-recipes'
 
 const shared = globalThis as typeof globalThis & { ringsideStarted?: boolean }
 
@@ -27,6 +28,8 @@ export async function startServer(): Promise<void> {
   if (code) console.log(`First visit: open ${config().siteUrl}/welcome and enter the one-time code ${code}`)
   const swept = await blobs().sweepTemporary(new Date(Date.now() - DAY_MS))
   if (swept > 0) log.info({ swept }, 'half-written deliveries removed')
+  const raised = await raiseRecipes(db)
+  if (raised > 0) log.info({ campaigns: raised }, 'pictures are drawn otherwise now, and are made again')
   const signs = path.join(config().dataFolder, 'processes')
   const { id: holder, end } = showLife(signs)
   const freed = await takeOverFromDead(db, (other) => isAlive(signs, other))

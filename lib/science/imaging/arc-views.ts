@@ -55,5 +55,5 @@ export function coreView(planes: NormalisedPlane[], recipe: Recipe): RenderedVie
   if (planes.length < 2) return null
   const { width, height } = planes[0]
   const pixels = renderColour(planes, recipe, extraLimits(recipe).core)
-  return { key: 'core', width, height, channels: 3, pixels, note: saturationNote(planes) }
+  return { key: 'core', width, height, channels: 3, pixels, note: saturationNote(planes, recipe) }
 }

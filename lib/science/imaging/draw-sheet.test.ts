@@ -23,11 +23,22 @@ function coded(planes: BandPlane[], recipe: Recipe) {
     const { background, sigma: noise } = estimateNoise(plane.data, plane.width, plane.height)
     return { role: 'band', ...plane, background, noise, pixelScaleArcsec: plane.pixelScaleArcsec ?? null }
   })
-  const derived = derivedPlanes(planes, recipe).map(({ role, plane }): PlaneToEncode => {
+  const { planes: made, clipped } = derivedPlanes(planes, recipe)
+  const derived = made.map(({ role, plane }): PlaneToEncode => {
     const { band, width, height, values: data, sigma } = plane
     return { role, band, width, height, data, background: 0, noise: 1, bandNoise: sigma, pixelScaleArcsec: null }
   })
-  return decodePlanes(encodePlanes([...bands, ...derived], recipe))
+  return decodePlanes(encodePlanes([...bands, ...derived], recipe, clipped))
+}
+
+/** The middle of a plane, `side` pixels wide and high. */
+function cropOf(plane: BandPlane, side: number): BandPlane {
+  const left = Math.floor((plane.width - side) / 2)
+  const bottom = Math.floor((plane.height - side) / 2)
+  const data = Float32Array.from({ length: side * side }, (_, i) => {
+    return plane.data[(bottom + Math.floor(i / side)) * plane.width + left + (i % side)]
+  })
+  return { ...plane, width: side, height: side, data }
 }
 
 const limitsOf = ({ blackSigma, whiteSigma, softeningSigma }: ViewSheet): DrawOptions => ({
@@ -86,6 +97,35 @@ describe.each(SIMULATED_KINDS)('of %s', (kind) => {
         ([, worst]: [string, number]) => worst <= 2,
       )
     }
+  })
+})
+
+describe('of a core that is cut in some bands', () => {
+  const planes = usualCandidate(1).map((plane, k) => {
+    const most = [1, 0.4, 0.25][k] * plane.data.reduce((largest, value) => Math.max(largest, value), 0)
+    return { ...plane, data: plane.data.map((value) => Math.min(value, most)) }
+  })
+
+  it.each([{}, { weights: { g: 2 } }])('every view is the PNG’s picture within two counts, with %s', (other) => {
+    const recipe = { ...defaultRecipe(['g', 'r', 'i']), ...other }
+    const pictures = renderViews(planes, recipe)
+    expect(pictures[0].note).toContain('saturated in r, i')
+    for (const view of pictures) {
+      const drawn = draw(sheetOf(view.key, planes, recipe))
+      expect(difference(drawn, view.pixels, view.channels), view.key).toBeLessThanOrEqual(2)
+    }
+  })
+
+  it('bands on grids of their own are the PNG’s picture too', () => {
+    const coarse = cropOf(planes[2], 60)
+    const mixed = [planes[0], planes[1], coarse].map((plane) => ({
+      ...plane,
+      pixelScaleArcsec: plane === coarse ? 0.3 : 0.2,
+    }))
+    const recipe = defaultRecipe(['g', 'r', 'i'])
+    const [view] = renderViews(mixed, recipe)
+    expect(view.note).toContain('saturated')
+    expect(difference(draw(sheetOf('colour', mixed)), view.pixels, 3)).toBeLessThanOrEqual(3)
   })
 })
 

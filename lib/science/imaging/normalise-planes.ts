@@ -33,6 +33,8 @@ export interface NormalisedPlane {
   missing: number
   /** 'empty': no finite pixel. 'constant': all finite pixels equal, so there is nothing to see. */
   state: 'usable' | 'constant' | 'empty'
+  /** What clippedPixels says of the plane as its band was delivered, where it has been asked already. */
+  clipped?: readonly number[]
 }
 
 /** @throws RangeError when the number of pixels is not width x height. */

@@ -14,7 +14,7 @@ import type { NormalisedPlane } from './normalise-planes'
 import type { Recipe } from './recipe'
 
 const MAGIC = 'RSPX'
-const VERSION = 1
+const VERSION = 2
 const SOFTENING_SIGMA = 16
 const CODES_PER_E = 1024
 const MOST_SIGMA = 1e12
@@ -51,9 +51,13 @@ export interface DecodedPlanes {
   recipe: Recipe
 }
 
+/** Clipped pixels of the bands on the grid that they are combined on, by band: not to be found again in coded pixels. */
+export type ClippedByBand = Record<string, readonly number[]>
+
 interface Head {
   version: number
   recipe: Recipe
+  clipped: ClippedByBand
   planes: (Omit<PlaneToEncode, 'data'> & { lowest: number })[]
 }
 
@@ -61,11 +65,16 @@ const codeOf = (sigma: number): number =>
   Math.round(CODES_PER_E * Math.asinh(Math.max(-MOST_SIGMA, Math.min(MOST_SIGMA, sigma)) / SOFTENING_SIGMA))
 
 /** @throws RangeError when the number of pixels of a plane is not width x height. */
-export function encodePlanes(planes: readonly PlaneToEncode[], recipe: Recipe): Uint8Array<ArrayBuffer> {
+export function encodePlanes(
+  planes: readonly PlaneToEncode[],
+  recipe: Recipe,
+  clipped: ClippedByBand = {},
+): Uint8Array<ArrayBuffer> {
   const coded = planes.map(encodePlane)
   const head: Head = {
     version: VERSION,
     recipe,
+    clipped,
     planes: planes.map(({ data: _pixels, ...facts }, k) => {
       return { ...facts, lowest: coded[k].lowest }
     }),
@@ -116,7 +125,7 @@ export function decodePlanes(bytes: Uint8Array): DecodedPlanes {
     const size = plane.width * plane.height
     const decoded = decodePlane(plane, bytes.subarray(at, at + size), bytes.subarray(at + size, at + 2 * size))
     at += 2 * size
-    return decoded
+    return { ...decoded, clipped: head.clipped[plane.band] ?? [] }
   })
   return { planes, recipe: head.recipe }
 }

@@ -26,8 +26,12 @@ export interface DeepLimits extends LimitsSigma {
   smooth: boolean
 }
 
+/** How pictures are drawn by one recipe. Where drawing changes so that pictures differ, it is raised. */
+export const DRAWING = 2
+
 export interface Recipe {
-  version: 1
+  /** 1: every pixel has its hue. 2: clipped pixels have none (neutral-cores.ts). */
+  version: 1 | typeof DRAWING
   /** Keys of the views wanted, in the order in which they are shown. */
   views: string[]
   colour: ColourLimits
@@ -109,7 +113,7 @@ const COMBINED_VIEWS: readonly (ViewName & { bands: number })[] = [
 export function defaultRecipe(bands: string[]): Recipe {
   const combined = COMBINED_VIEWS.filter((view) => bands.length >= view.bands).map((view) => view.key)
   return {
-    version: 1,
+    version: DRAWING,
     views: [...(bands.length > 0 ? combined : ['deep']), ...bands.map(bandViewKey)],
     colour: {
       blackSigma: -1,

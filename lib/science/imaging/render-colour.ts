@@ -4,6 +4,7 @@
  */
 import { channelWeights, colourBalance, mixPlanes } from './colour-channels'
 import { luptonFromLimits, luptonRgb } from './lupton'
+import { neutralCores } from './neutral-cores'
 import type { NormalisedPlane } from './normalise-planes'
 import type { ColourLimits, Recipe } from './recipe'
 import { MISSING_GREY } from './render-grey'
@@ -31,9 +32,13 @@ export function colourChannels(planes: NormalisedPlane[], recipe: Recipe, limits
       planes,
       shares.map((share, k) => share * bandWeights[k]),
     ),
-  ) as [Float32Array, Float32Array, Float32Array]
+  ) as Mixed
   const missing = missingPixels(red, green, blue)
-  const [r, g, b, intensity] = calmHues(red, green, blue, width, height, limits)
+  const mixed: Mixed = [red, green, blue]
+  const neutral = recipe.version >= 2 ? neutralCores(planes, mixed) : mixed
+  const [r, g, b, mean] = calmHues(neutral, width, height, limits)
+  // White stays where it is, so that a core without hue changes nothing of the picture round it.
+  const intensity = neutral === mixed ? mean : meanOf(mixed)
   return { red: r, green: g, blue: b, intensity, missing }
 }
 
@@ -61,13 +66,19 @@ function missingPixels(r: Float32Array, g: Float32Array, b: Float32Array): numbe
   return missing
 }
 
+function meanOf([red, green, blue]: Mixed): Float32Array {
+  return red.map((value, i) => {
+    const mean = (value + green[i] + blue[i]) / 3
+    return mean === mean ? mean : 0
+  })
+}
+
+type Mixed = [Float32Array, Float32Array, Float32Array]
 type Channels = [Float32Array, Float32Array, Float32Array, Float32Array]
 
 /** Channels with their hue calmed, and the intensity. Missing pixels come out as 0. */
 function calmHues(
-  red: Float32Array,
-  green: Float32Array,
-  blue: Float32Array,
+  [red, green, blue]: Mixed,
   width: number,
   height: number,
   { hueFromSigma, saturation }: ColourLimits,

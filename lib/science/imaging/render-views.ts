@@ -3,6 +3,7 @@
  * flat, and a note says why.
  */
 import { blueView, coreView, residualView } from './arc-views'
+import { withClipped } from './clipped-pixels'
 import { commonGrid } from './common-grid'
 import { normalisePlane, type BandPlane, type NormalisedPlane } from './normalise-planes'
 import { orientPlanes } from './orient-planes'
@@ -27,11 +28,12 @@ export type { RenderedView } from './rendered-view'
 export function renderViews(given: BandPlane[], recipe: Recipe): RenderedView[] {
   const { planes, note: turnNote } = orientPlanes(given, recipe.northUp === true)
   const native = planes.map(normalisePlane)
-  const { all, group, note } = commonGrid(planes, native)
+  const { all, group: bare, note } = commonGrid(planes, native)
+  const group = bare.map(withClipped)
   const matchNote = [turnNote, note].filter(Boolean).join(' ') || null
   const wanted = recipe.views.flatMap((key) => bandOfView(key) ?? [])
   const absent = wanted.filter((band) => !all.some((plane) => plane.band === band))
-  const left = all.filter((plane) => !group.includes(plane))
+  const left = all.filter((plane) => !bare.includes(plane))
   const noColour = recipe.views.includes('colour') ? noColourNote(group, all, absent) : null
   const scene: Scene = { group, left, absent, recipe, matchNote }
   const views: RenderedView[] = []
@@ -88,7 +90,8 @@ function colourView(
   const usable = group.filter((plane) => plane.state === 'usable')
   const { width, height } = usable[0]
   const note =
-    [sizesNote(left), colourNote(usable, group, absent), saturationNote(usable)].filter(Boolean).join(' ') || null
+    [sizesNote(left), colourNote(usable, group, absent), saturationNote(usable, recipe)].filter(Boolean).join(' ') ||
+    null
   return { key: 'colour', width, height, channels: 3, pixels: renderColour(usable, recipe), note }
 }
 

@@ -1,6 +1,8 @@
 /** The sentences that go with a picture that is not made of everything it should be. */
-import { saturatedPixels } from './lens-light/core-faults'
+import { clippedOf, isClippedNear } from './clipped-pixels'
+import { CORE_REACH } from './lens-light/core-faults'
 import type { NormalisedPlane } from './normalise-planes'
+import type { Recipe } from './recipe'
 
 /** Why there is no colour view; null when there can be one. */
 export function noColourNote(group: NormalisedPlane[], all: NormalisedPlane[], absent: string[]): string | null {
@@ -49,13 +51,15 @@ export function arcNote(usable: NormalisedPlane[], group: NormalisedPlane[], abs
   )
 }
 
-/** For views of colour: bands whose middle is cut at one level, so that its hue says nothing; null when none is. */
-export function saturationNote(planes: NormalisedPlane[]): string | null {
-  const full = planes.filter(
-    (plane) => saturatedPixels(plane, (plane.width - 1) / 2, (plane.height - 1) / 2).length > 0,
-  )
+/** For views of colour: bands with pixels that are clipped, in the middle or elsewhere, and what that does to the hue; null for none. */
+export function saturationNote(planes: NormalisedPlane[], { version }: Recipe): string | null {
+  const full = planes.filter((plane) => clippedOf(plane).length > 0)
   if (full.length === 0) return null
-  return `The middle is saturated in ${full.map((plane) => plane.band).join(', ')}: its colour is not real.`
+  const { width, height } = planes[0]
+  const isMiddle = full.some((plane) => isClippedNear(plane, (width - 1) / 2, (height - 1) / 2, CORE_REACH))
+  const bands = full.map((plane) => plane.band).join(', ')
+  const place = isMiddle ? `The middle is saturated in ${bands}` : `An object off the middle is saturated in ${bands}`
+  return `${place}: ${version >= 2 ? 'drawn without colour there' : 'its colour is not real'}.`
 }
 
 export function bandNote(plane: NormalisedPlane): string | null {

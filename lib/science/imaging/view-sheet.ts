@@ -100,7 +100,10 @@ function usableGroup(planes: DecodedPlane[]): NormalisedPlane[] {
     const sky = { background, sigma, finiteFraction: 1 }
     return { band, width, height, data, pixelScaleArcsec, sky }
   })
-  return commonGrid(native, planes).group.filter((plane) => plane.state === 'usable')
+  const clipped = new Map(planes.map((plane) => [plane.band, plane.clipped]))
+  return commonGrid(native, planes).group.flatMap((plane) =>
+    plane.state === 'usable' ? { ...plane, clipped: clipped.get(plane.band) } : [],
+  )
 }
 
 const greySource = (

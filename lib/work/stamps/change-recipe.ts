@@ -10,6 +10,7 @@ import { conflict, notFound } from '@/lib/platform/problems/problem'
 import { canonicalRecipe, type Recipe } from '@/lib/science/imaging/recipe'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { requestImaging } from './commit-outcomes'
+import { raised } from './raise-recipes'
 
 export interface ChangedRecipe {
   version: number
@@ -27,10 +28,10 @@ export async function changeRecipe(
   permit: CampaignPermit<'lead'>,
   { recipe, after }: { recipe: Recipe; after: number },
 ): Promise<ChangedRecipe> {
-  return append(db, permit, canonicalRecipe(recipe), after)
+  return append(db, permit, canonicalRecipe(raised(recipe)), after)
 }
 
-/** Appends an earlier version as a new one. @throws Problem 404 no such version; 409 as changeRecipe. */
+/** Appends an earlier version as a new one, drawn as pictures are drawn now. @throws Problem 404 no such version; 409 as changeRecipe. */
 export async function takeRecipeAgain(
   db: Kysely<DB>,
   permit: CampaignPermit<'lead'>,
@@ -38,7 +39,7 @@ export async function takeRecipeAgain(
 ): Promise<ChangedRecipe> {
   const earlier = await findRecipe(db, permit.campaign.id, again)
   if (!earlier) throw notFound('version of the recipe')
-  return append(db, permit, earlier.parameters, after, again)
+  return append(db, permit, canonicalRecipe(raised(JSON.parse(earlier.parameters) as Recipe)), after, again)
 }
 
 async function append(

@@ -23,9 +23,10 @@ export async function codePlanes({ planes, recipe }: PlanesTask): Promise<Planes
     const { background, sigma: noise } = sky ?? estimateNoise(data, width, height)
     return { role: 'band', band, width, height, data, background, noise, pixelScaleArcsec: pixelScaleArcsec ?? null }
   })
-  const derived = derivedPlanes(turned, recipe).map(({ role, plane }): PlaneToEncode => {
+  const { planes: made, clipped } = derivedPlanes(turned, recipe)
+  const derived = made.map(({ role, plane }): PlaneToEncode => {
     const { band, width, height, values: data, sigma } = plane
     return { role, band, width, height, data, background: 0, noise: 1, bandNoise: sigma, pixelScaleArcsec: null }
   })
-  return { bytes: new Uint8Array(gzipSync(encodePlanes([...bands, ...derived], recipe), { level: 5 })) }
+  return { bytes: new Uint8Array(gzipSync(encodePlanes([...bands, ...derived], recipe, clipped), { level: 5 })) }
 }

@@ -10,7 +10,7 @@ export interface PlaneSource {
 }
 
 /** Changes with the form of the answer, so that no browser keeps an old one. */
-const FORM = 2
+const FORM = 3
 
 /**
  * Name of a candidate's planes: of the pixels they are made of and of the recipe that goes with them. The same name is the same

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { viewsOf, type Recipe } from '@/lib/science/imaging/recipe'
+import { DRAWING, viewsOf, type Recipe } from '@/lib/science/imaging/recipe'
 
 const number = (what: string, least: number, most: number) =>
   z
@@ -45,7 +45,11 @@ const CLOSE_FIELD = 'The close field, in arcsec,'
 export function recipeInput(bands: string[]) {
   return z
     .strictObject({
-      version: z.literal(1, 'The version of the form of a recipe is 1.').default(1),
+      // An earlier drawing is taken and raised: pictures made from now on are of today's.
+      version: z
+        .literal([1, DRAWING], `The version of the form of a recipe is ${DRAWING}.`)
+        .default(DRAWING)
+        .transform((): typeof DRAWING => DRAWING),
       views: z
         .array(z.string(), 'The views are a list of keys, such as "colour".')
         .min(1, 'Choose at least one view: without one there is nothing to judge.')
