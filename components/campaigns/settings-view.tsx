@@ -1,6 +1,7 @@
 import type { FormAction } from '@/components/people/use-kept-form'
 import type { RuleVersion } from '@/lib/work/campaigns/change-settings'
 import { ButtonLink } from '@/components/ui/button'
+import { CosmologyForm, type CosmologyChoice } from './cosmology-form'
 import { FormSection } from './form-section'
 import { counted } from './in-words'
 import { LookingForm, type Looking } from './looking-form'
@@ -19,6 +20,8 @@ export function SettingsView({
   changeLooking,
   sheet,
   changeSheet,
+  cosmology,
+  changeCosmology,
   versions,
   changeRule,
   changeNamePattern,
@@ -31,6 +34,8 @@ export function SettingsView({
   changeLooking: FormAction
   sheet: SheetChoice
   changeSheet: FormAction
+  cosmology: CosmologyChoice
+  changeCosmology: FormAction
   versions: RuleVersion[]
   changeRule: FormAction
   changeNamePattern: FormAction
@@ -92,6 +97,12 @@ export function SettingsView({
         <ButtonLink href={picturesHref} className="self-start">
           Change how pictures are made
         </ButtonLink>
+      </FormSection>
+      <FormSection
+        title="Cosmology"
+        about="In which measured Einstein radii become masses and time delays. A measurement keeps the one it was worked out in; a change holds for those that follow."
+      >
+        <CosmologyForm choice={cosmology} action={changeCosmology} />
       </FormSection>
       <FormSection
         title="File names"

@@ -4,7 +4,7 @@ export const COSMOLOGIES = ['flat LCDM', 'Planck 2018'] as const
 
 const typed = (what: string, low: number, high: number, unit: string) =>
   z.coerce
-    .number(`${what} is a number${unit}.`)
+    .number(`${what} is a number${unit && ` of${unit}`}.`)
     .min(low, `${what} lies from ${low} to ${high}${unit}.`)
     .max(high, `${what} lies from ${low} to ${high}${unit}.`)
 

@@ -4,8 +4,10 @@ import { revalidatePath } from 'next/cache'
 import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
 import { NamePatternInput } from '@/lib/work/campaigns/campaign-input'
+import { changeCosmology } from '@/lib/work/campaigns/change-cosmology'
 import { changeLooking } from '@/lib/work/campaigns/change-looking'
 import { changeNamePattern, changeRule } from '@/lib/work/campaigns/change-settings'
+import { CosmologyInput } from '@/lib/work/campaigns/cosmology-input'
 import { LookingInput } from '@/lib/work/campaigns/looking-input'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { changeSheet } from '@/lib/work/sheet/change-sheet'
@@ -40,6 +42,17 @@ export async function changeLookingAction(slug: string, _before: FormState, form
     await changeLooking(db, permit, LookingInput.parse(Object.fromEntries(form)))
     revalidatePath(`/campaigns/${slug}`, 'layout')
     return { done: 'Saved. It holds for looks from now on.' }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}
+
+export async function changeCosmologyAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await changeCosmology(db, permit, CosmologyInput.parse(Object.fromEntries(form)))
+    revalidatePath(`/campaigns/${slug}`, 'layout')
+    return { done: 'Saved. It holds for measurements from now on.' }
   } catch (error) {
     return failedForm(error, form)
   }

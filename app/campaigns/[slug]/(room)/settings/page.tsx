@@ -4,7 +4,13 @@ import { SettingsView } from '@/components/campaigns/settings-view'
 import { fromJson } from '@/db/schema/values'
 import { listRuleVersions } from '@/lib/work/campaigns/change-settings'
 import { sheetSettings } from '@/lib/work/sheet/change-sheet'
-import { changeLookingAction, changeSheetAction, changeNamePatternAction, changeRuleAction } from './actions'
+import {
+  changeCosmologyAction,
+  changeLookingAction,
+  changeSheetAction,
+  changeNamePatternAction,
+  changeRuleAction,
+} from './actions'
 
 export const metadata: Metadata = { title: 'Settings' }
 
@@ -28,6 +34,12 @@ export default async function SettingsPage({ params }: PageProps<'/campaigns/[sl
       changeLooking={changeLookingAction.bind(null, slug)}
       sheet={await sheetSettings(db, permit)}
       changeSheet={changeSheetAction.bind(null, slug)}
+      cosmology={{
+        cosmology: campaign.cosmology,
+        hubbleConstant: campaign.hubble_constant,
+        omegaMatter: campaign.omega_matter,
+      }}
+      changeCosmology={changeCosmologyAction.bind(null, slug)}
       changeRule={changeRuleAction.bind(null, slug)}
       changeNamePattern={changeNamePatternAction.bind(null, slug)}
     />
