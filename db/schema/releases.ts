@@ -6,6 +6,7 @@ export type ReleaseKind = 'release' | 'erratum' | 'retraction'
 export type ReleaseAccess = 'private' | 'link' | 'public'
 
 export interface ReleaseCosmology {
+  model: 'flat LCDM' | 'Planck 2018'
   /** km/s/Mpc */
   hubbleConstant: number
   omegaMatter: number

@@ -8,5 +8,6 @@ export const JOB = {
   matchList: 'match-list',
   matchCandidates: 'match-candidates',
   consensus: 'consensus',
+  makeRelease: 'make-release',
   sendMail: 'send-mail',
 } as const
