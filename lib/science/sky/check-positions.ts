@@ -27,16 +27,23 @@ export type AngleValues = ArrayLike<number | string | null>
 
 const SHOWN = 20
 
+/** How messages name rows: 'Line 7 has', '3 lines (the first is line 7) have'. */
+export interface RowNames {
+  one: string
+  many: string
+  numberOf: (place: number) => number
+}
+
 /**
  * @param ra, dec as many values each: numbers in the unit given, or text. @param units 'text' reads '12:30:49.4' and '12.5h' too.
- * @param firstRow number of the first row in messages, such as 2 in a file whose first line is a header.
+ * @param firstRow number of the first row in messages, such as 2 in a file whose first line is a header; or how rows are named.
  * @throws RangeError when there are not as many of one as of the other.
  */
 export function checkPositions(
   ra: AngleValues,
   dec: AngleValues,
   units: { ra: AngleUnit; dec: AngleUnit },
-  firstRow = 1,
+  firstRow: number | RowNames = 1,
 ): CheckedPositions {
   if (ra.length !== dec.length) {
     throw new RangeError(`There are ${ra.length} right ascensions for ${dec.length} declinations.`)
@@ -75,7 +82,9 @@ export function checkPositions(
     leastDec = Math.min(leastDec, d)
     mostDec = Math.max(mostDec, d)
   }
-  const where = (rows: Rows) => rows.where(firstRow)
+  const names: RowNames =
+    typeof firstRow === 'number' ? { one: 'row', many: 'rows', numberOf: (place) => place + firstRow } : firstRow
+  const where = (rows: Rows) => rows.where(names)
   const problems: PositionProblem[] = []
   const add = (kind: PositionProblem['kind'], rows: Rows, message: string) =>
     problems.push({ kind, rows: rows.first, count: rows.count, message })
@@ -136,8 +145,9 @@ class Rows {
   }
 
   /** 'Row 7 has', '3 rows (the first is row 7) have' */
-  where(firstRow: number): string {
-    const row = this.first[0] + firstRow
-    return this.count === 1 ? `Row ${row} has` : `${this.count} rows (the first is row ${row}) have`
+  where({ one, many, numberOf }: RowNames): string {
+    const row = numberOf(this.first[0])
+    const begun = one[0].toUpperCase() + one.slice(1)
+    return this.count === 1 ? `${begun} ${row} has` : `${this.count} ${many} (the first is ${one} ${row}) have`
   }
 }
