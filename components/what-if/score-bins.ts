@@ -1,9 +1,9 @@
-/** How many candidates lie where on the scale of a rule, for a small histogram beside its thresholds. */
+/** How many candidates that came to the bench lie where on the scale of a rule, for a small histogram beside its thresholds. */
 import { probabilityOf, logOddsOf } from '@/lib/science/agreement/posterior'
 import { waldBoundaries } from '@/lib/science/agreement/sequential-test'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { scoreOf } from '@/lib/work/consensus/quality-curve'
-import type { WhatIfColumns } from '@/lib/work/consensus/what-if-columns'
+import { isDropped, type WhatIfColumns } from '@/lib/work/consensus/what-if-columns'
 
 export interface ScoreBins {
   /** mean points, or evidence */
@@ -22,13 +22,15 @@ const BINS = { mean: 30, reliability: 48 } as const
 const MOST_EVIDENCE = 12
 
 /** Cost O(candidates). The rule must be one that can be tried. */
-export function scoreBins({ candidates, tallies }: WhatIfColumns, rule: RuleInput): ScoreBins {
+export function scoreBins(columns: WhatIfColumns, rule: RuleInput): ScoreBins {
+  const { candidates, tallies } = columns
   const [low, high] = rule.method === 'mean' ? [0, 3] : [-MOST_EVIDENCE, MOST_EVIDENCE]
   const bins = BINS[rule.method]
   const counts = new Uint32Array(bins)
   let tooFew = 0
   let spread = 0
   for (let row = 0; row < candidates; row++) {
+    if (isDropped(columns, row)) continue
     const n = tallies.grades[row]
     if (n < rule.leastGrades) {
       tooFew += 1

@@ -155,7 +155,13 @@ export function TryRule({
               Back to the rule in force
             </Button>
           </div>
-          <Sources about={about} changedByRun={present.changed} heldByRuling={trial.heldByRuling} slug={slug} />
+          <Sources
+            about={about}
+            changedByRun={present.changed}
+            heldByRuling={trial.heldByRuling}
+            dropped={trial.dropped}
+            slug={slug}
+          />
         </section>
         <div className="flex min-w-0 flex-col gap-8">
           <div className="grid gap-x-10 gap-y-8 xl:grid-cols-2">
@@ -181,11 +187,13 @@ function Sources({
   about,
   changedByRun,
   heldByRuling,
+  dropped,
   slug,
 }: {
   about: WhatIfAbout
   changedByRun: number
   heldByRuling: number
+  dropped: number
   slug: string
 }) {
   const { reliabilities, gradesSinceRun, lensShare, graders, leftOut } = about
@@ -206,6 +214,12 @@ function Sources({
             Run the consensus
           </Link>{' '}
           to see the rule’s doing alone.
+        </p>
+      ) : null}
+      {dropped > 0 ? (
+        <p>
+          {counted(dropped, 'candidate')} {dropped === 1 ? 'is' : 'are'} set aside by the first pass, which no rule
+          changes, and in no completeness here: that is of what came to the bench.
         </p>
       ) : null}
       {heldByRuling > 0 ? (

@@ -36,6 +36,7 @@ function body(graded = true, stamps: ('lens' | 'not a lens')[] = [], looks = 0) 
       state: Uint8Array.of(2, 0, 3, ...stamps.map(() => 0)),
       ruled: new Uint8Array(rows),
       truth: Int8Array.of(...Array<number>(candidates).fill(UNKNOWN_TRUTH), ...truths),
+      notSentOn: new Uint8Array(rows),
       tallies: {
         looks: many([2, 2, 2]),
         grades: many([2, 2, 2]),

@@ -77,6 +77,8 @@ export interface CandidateOfReport {
   asked: number
   /** A ruling stands that confirms it or sets it aside. */
   ruled: 0 | 1
+  /** Where it is in the first pass; 'sent on' where the campaign makes none. */
+  pass: 'waiting' | 'sent on' | 'dropped'
 }
 
 export async function listCandidatesOfReport(
@@ -86,6 +88,7 @@ export async function listCandidatesOfReport(
   return (
     db
       .selectFrom('candidate')
+      .innerJoin('campaign', 'campaign.id', 'candidate.campaign_id')
       .leftJoin('ruling', 'ruling.id', 'candidate.ruling_id')
       .select([
         'candidate.id',
@@ -98,6 +101,9 @@ export async function listCandidatesOfReport(
       ])
       .select([
         sql<0 | 1>`candidate.imaged_at is not null`.as('imaged'),
+        sql<
+          CandidateOfReport['pass']
+        >`case when campaign.uses_sheet = 1 then candidate.first_pass else 'sent on' end`.as('pass'),
         sql<0 | 1>`coalesce(ruling.outcome in ('confirmed', 'set aside'), 0)`.as('ruled'),
       ])
       .where('candidate.id', '>', page.after)
@@ -117,6 +123,8 @@ export interface ReportInput {
   newestRuleId: number
   newestRulingId: number
   newestCandidateId: number
+  newestSheetMarkId: number
+  usesSheet: 0 | 1
 }
 
 export async function newestReportInput(db: Kysely<DB>, campaignId: number): Promise<ReportInput> {
@@ -130,7 +138,9 @@ export async function newestReportInput(db: Kysely<DB>, campaignId: number): Pro
     ${of('run')} as newestRunId,
     ${of('rule')} as newestRuleId,
     (select coalesce(max(id), 0) from ruling) as newestRulingId,
-    ${of('candidate')} as newestCandidateId`.execute(db)
+    ${of('candidate')} as newestCandidateId,
+    ${of('sheet_mark')} as newestSheetMarkId,
+    (select uses_sheet from campaign where id = ${campaignId}) as usesSheet`.execute(db)
   return rows[0]
 }
 

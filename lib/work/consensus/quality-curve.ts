@@ -7,7 +7,7 @@ import { LENS, NOT_A_LENS } from '@/lib/science/agreement/lens-model'
 import { purityOf } from '@/lib/science/agreement/rule-quality'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { replayStamps } from './try-rule'
-import type { WhatIfColumns } from './what-if-columns'
+import { isDropped, type WhatIfColumns } from './what-if-columns'
 
 export interface CurvePoint {
   /** mean points, or evidence (natural log of the likelihood ratio), from which the rule would confirm */
@@ -49,16 +49,14 @@ const binsOf = ({ low, high, step }: Scale) => Math.round((high - low) / step) +
 const binOf = (score: number, { low, high, step }: Scale) =>
   Math.floor((Math.min(high, Math.max(low, score)) - low) / step + 1e-9)
 
-function promisedCurve(
-  { candidates, tallies, probabilities }: WhatIfColumns,
-  rule: RuleInput,
-  scale: Scale,
-): CurvePoint[] {
+function promisedCurve(columns: WhatIfColumns, rule: RuleInput, scale: Scale): CurvePoint[] {
+  const { candidates, tallies, probabilities } = columns
   const bins = binsOf(scale)
   const count = new Float64Array(bins)
   const lenses = new Float64Array(bins)
   let all = 0
   for (let row = 0; row < candidates; row++) {
+    if (isDropped(columns, row)) continue
     all += probabilities[row]
     const n = tallies.grades[row]
     const score = n < rule.leastGrades ? NaN : scoreOf(tallies, rule, row, n)

@@ -16,6 +16,7 @@ interface Row {
   state?: (typeof OUTCOMES)[number]
   ruled?: boolean
   truth?: number
+  notSentOn?: boolean
   /** of a calibration stamp: what each of its looks weighs; 0 when left out */
   weights?: number[]
 }
@@ -52,6 +53,7 @@ function columnsFor(rows: Row[], about: Partial<WhatIfColumns['about']> = {}): W
       state: Uint8Array.from(rows, ({ state = 'open' }) => code(state)),
       ruled: Uint8Array.from(rows, ({ ruled }) => (ruled ? 1 : 0)),
       truth: Int8Array.from(rows, ({ truth = UNKNOWN_TRUTH }) => truth),
+      notSentOn: Uint8Array.from(rows, ({ notSentOn }) => (notSentOn ? 1 : 0)),
       tallies: {
         looks: Uint16Array.from(rows, ({ points }) => points.length),
         grades: Uint16Array.from(rows, ({ points }) => points.length),
@@ -65,6 +67,24 @@ function columnsFor(rows: Row[], about: Partial<WhatIfColumns['about']> = {}): W
 }
 
 describe('tryRule', () => {
+  it('sets aside what the first pass did not send on, whatever the rule, until a look counts there', () => {
+    const columns = columnsFor([
+      { points: [], state: 'set aside', notSentOn: true },
+      { points: [], state: 'open', notSentOn: true },
+      { points: [], state: 'open' },
+      { points: [3, 3], evidence: 3, state: 'confirmed', notSentOn: true },
+    ])
+    const trial = tryRule(columns, MEAN)
+    expect(trial.now).toEqual({ open: 2, split: 0, confirmed: 1, 'set aside': 1 })
+    expect(trial.then).toEqual({ open: 1, split: 0, confirmed: 1, 'set aside': 2 })
+    expect(trial.moves).toEqual([{ from: 'open', to: 'set aside', rows: [1] }])
+    expect(trial.dropped).toBe(2)
+    // Of what came to the bench, a row without grades (10 % of lenses) and one that the rule confirms.
+    const p = columns.probabilities[3]
+    expect(trial.promised?.completeness).toBeCloseTo(p / (p + 0.1), 12)
+    expect(qualityCurve(columns, MEAN).promised.at(-1)?.completeness).toBeCloseTo(p / (p + 0.1), 12)
+  })
+
   it('counts states now and then, and lists who would move from where to where, the likeliest lens first', () => {
     const columns = columnsFor([
       { points: [3, 3], evidence: 2, state: 'confirmed' },

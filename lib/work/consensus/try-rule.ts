@@ -12,9 +12,10 @@ import {
 } from '@/lib/science/agreement/rule-quality'
 import { SUM_SLACK, waldBoundaries } from '@/lib/science/agreement/sequential-test'
 import type { RuleInput } from '@/lib/work/campaigns/rule-input'
-import type { WhatIfColumns } from './what-if-columns'
+import { isDropped, type WhatIfColumns } from './what-if-columns'
 
 const CONFIRMED = OUTCOMES.indexOf('confirmed')
+const SET_ASIDE = OUTCOMES.indexOf('set aside')
 
 export interface Move {
   from: Outcome
@@ -33,7 +34,9 @@ export interface RuleTrial {
   /** candidates that keep their ruling though the rule would have it otherwise */
   heldByRuling: number
   stamps: StampQuality
-  /** null where nothing is known of the reliabilities */
+  /** candidates that the first pass has set aside by itself, which no rule changes */
+  dropped: number
+  /** of what came to the bench; null where nothing is known of the reliabilities */
   promised: { completeness: number | null; purity: number | null } | null
 }
 
@@ -54,10 +57,14 @@ export function ruleProblems(rule: RuleInput): string[] {
 }
 
 /** Code of each row's outcome, before any ruling. @throws RangeError with the first of ruleProblems. */
-export function outcomesOf({ tallies }: WhatIfColumns, rule: RuleInput): Uint8Array {
-  return rule.method === 'mean'
-    ? outcomesByMean(tallies, rule)
-    : outcomesByReliability(tallies, { ...rule, mostLooks: rule.gradesWanted })
+export function outcomesOf(columns: WhatIfColumns, rule: RuleInput): Uint8Array {
+  const { tallies, notSentOn } = columns
+  const outcomes =
+    rule.method === 'mean'
+      ? outcomesByMean(tallies, rule)
+      : outcomesByReliability(tallies, { ...rule, mostLooks: rule.gradesWanted })
+  for (let row = 0; row < notSentOn.length; row++) if (isDropped(columns, row)) outcomes[row] = SET_ASIDE
+  return outcomes
 }
 
 /** Cost O(rows), but for the sorting of those that change. @throws RangeError with the first of ruleProblems. */
@@ -69,10 +76,14 @@ export function tryRule(columns: WhatIfColumns, rule: RuleInput): RuleTrial {
   const moved = new Map<number, number[]>()
   let changed = 0
   let heldByRuling = 0
+  let dropped = 0
+  const benched: number[] = []
   for (let row = 0; row < candidates; row++) {
     const before = state[row]
     const after = ruled[row] ? before : outcomes[row]
     if (after !== outcomes[row]) heldByRuling += 1
+    if (isDropped(columns, row)) dropped += 1
+    else benched.push(row)
     now[before] += 1
     then[after] += 1
     if (before === after) continue
@@ -93,11 +104,15 @@ export function tryRule(columns: WhatIfColumns, rule: RuleInput): RuleTrial {
     changed,
     moves: moves.sort((a, b) => b.rows.length - a.rows.length),
     heldByRuling,
+    dropped,
     stamps: stampQuality(columns, rule),
     promised:
       about.lensShare === null
         ? null
-        : promisedQuality(probabilities.subarray(0, candidates), (row) => outcomes[row] === CONFIRMED),
+        : promisedQuality(
+            Float64Array.from(benched, (row) => probabilities[row]),
+            (at) => outcomes[benched[at]] === CONFIRMED,
+          ),
   }
 }
 

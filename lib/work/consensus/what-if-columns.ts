@@ -31,12 +31,18 @@ export interface WhatIfColumns {
   ruled: Uint8Array
   /** LENS, NOT_A_LENS or UNKNOWN_TRUTH */
   truth: Int8Array
+  /** 1 where the first pass did not send it on: set aside by every rule as long as no look counts */
+  notSentOn: Uint8Array
   tallies: CandidateTallies
   /** looks of the calibration stamps, the one in row `candidates` first: each weighs as if the stamp had taught nothing of its grader */
   stampLooks: LookSeries
   /** of a lens; the share of lenses for a row without grades, NaN where that is not known */
   probabilities: Float64Array
 }
+
+/** Whether the first pass decides the row, whatever the rule. */
+export const isDropped = ({ notSentOn, tallies }: Pick<WhatIfColumns, 'notSentOn' | 'tallies'>, row: number): boolean =>
+  notSentOn[row] === 1 && tallies.looks[row] === 0
 
 export type WhatIfRows = Omit<WhatIfColumns, 'probabilities'>
 
@@ -55,18 +61,18 @@ interface Head {
 }
 
 /** Columns in the order in which they travel: those of 8 bytes first, so that each begins at a multiple of its own width. */
-function columnsOf({ ids, state, ruled, truth, tallies, stampLooks }: WhatIfRows) {
+function columnsOf({ ids, state, ruled, truth, notSentOn, tallies, stampLooks }: WhatIfRows) {
   const { evidence, looks, grades, points, squaredPoints } = tallies
   return [
     ...[evidence, stampLooks.weight],
     ...[ids, stampLooks.start],
     ...[looks, grades, Uint16Array.from(points), Uint16Array.from(squaredPoints)],
-    ...[state, ruled, truth, stampLooks.grade],
+    ...[state, ruled, truth, notSentOn, stampLooks.grade],
   ]
 }
 
 const HEAD_ALIGNMENT = 8
-const BYTES_A_ROW = 8 + 4 + 4 * 2 + 3
+const BYTES_A_ROW = 8 + 4 + 4 * 2 + 4
 const BYTES_A_LOOK = 8 + 1
 const BYTES_A_STAMP = 4
 
@@ -115,6 +121,7 @@ export function decodeWhatIf(bytes: Uint8Array<ArrayBuffer>): WhatIfColumns {
     state: new Uint8Array(next(1)),
     ruled: new Uint8Array(next(1)),
     truth: new Int8Array(next(1)),
+    notSentOn: new Uint8Array(next(1)),
     tallies: {
       evidence,
       looks,

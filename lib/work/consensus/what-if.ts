@@ -2,7 +2,7 @@ import 'server-only'
 import { setImmediate as nextTurn } from 'node:timers/promises'
 import type { Kysely } from 'kysely'
 import { listThumbnails } from '@/db/queries/catalogue'
-import { findNewestRun, listLeftOutPeople, newestInput } from '@/db/queries/consensus'
+import { findNewestRun, listLeftOutPeople, newestInput, type RunBounds } from '@/db/queries/consensus'
 import {
   countGradesAfter,
   listForWhatIf,
@@ -22,6 +22,7 @@ import type { CampaignPermit } from '@/lib/work/people/permission'
 import { stampUrl } from '@/lib/work/stamps/candidate-pictures'
 import { fitModel } from './fit-model'
 import { InputDigest } from './input-digest'
+import { readNotSentOn } from './not-sent-on'
 import { readGrades } from './read-grades'
 import { stampLooksOf } from './stamp-looks'
 import type { WhatIfAbout, WhatIfRows } from './what-if-columns'
@@ -59,7 +60,7 @@ async function readBeside(db: Kysely<DB>, campaignId: number, run: Run | null): 
   const known = run?.model ? fromJson(run.model) : null
   const model = known ?? (await fitModel(grades, leftOut))
   const tallies = tallyCandidates(grades.table, ratesOf(model, grades.people), grades.cannotJudge)
-  const states = await readStates(db, campaignId, newest.newestCandidateId)
+  const { states, notSentOn } = await readStates(db, { campaignId, ...newest })
   const { truth, ids } = grades
   const rows = Array.from(ids.keys())
   const candidates = rows.filter((row) => truth[row] === UNKNOWN_TRUTH)
@@ -82,6 +83,7 @@ async function readBeside(db: Kysely<DB>, campaignId: number, run: Run | null): 
     state: Uint8Array.from(order, (row) => OUTCOMES.indexOf(states.get(ids[row])?.state ?? 'open')),
     ruled: Uint8Array.from(order, (row) => states.get(ids[row])?.ruled ?? 0),
     truth: Int8Array.from(order, (row) => truth[row]),
+    notSentOn: Uint8Array.from(order, (row) => (truth[row] === UNKNOWN_TRUTH && notSentOn.has(ids[row]) ? 1 : 0)),
     tallies: inOrder(tallies, order),
     stampLooks: stampLooksOf(grades, { lensShare: model.lensShare, evidence: tallies.evidence }, stamps, counted),
   }
@@ -111,13 +113,19 @@ function ratesOf(model: RunModel, people: readonly number[]) {
   return people.map((personId) => known.get(personId) ?? model.newcomer)
 }
 
-async function readStates(db: Kysely<DB>, campaignId: number, upTo: number): Promise<Map<number, CandidateForWhatIf>> {
+async function readStates(
+  db: Kysely<DB>,
+  { campaignId, newestCandidateId: upTo, newestSheetMarkId }: RunBounds & { campaignId: number },
+): Promise<{ states: Map<number, CandidateForWhatIf>; notSentOn: Set<number> }> {
   const states = new Map<number, CandidateForWhatIf>()
+  const notSentOn = new Set<number>()
   for (let after = 0; ; await nextTurn()) {
     const page = await listForWhatIf(db, { campaignId, after, upTo, limit: PAGE })
     for (const candidate of page) states.set(candidate.id, candidate)
     const last = page.at(-1)
-    if (!last) return states
+    if (!last) return { states, notSentOn }
+    const reasons = await readNotSentOn(db, { campaignId, newestSheetMarkId }, { from: page[0].id, to: last.id })
+    for (const id of reasons.keys()) notSentOn.add(id)
     after = last.id
   }
 }

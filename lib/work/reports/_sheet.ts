@@ -33,6 +33,7 @@ export function sheetOf(answers: readonly SheetAnswer[], graders = 1, truth: rea
       given: 0,
       asked: 0,
       ruled: 0 as const,
+      pass: 'sent on' as const,
     })),
     truth: Int8Array.from({ length: candidates }, (_, index) => truth[index] ?? -1),
     answers: answers.length,

@@ -95,11 +95,13 @@ function serves({ input: before, madeAt, tookMs }: Kept, input: ReportInput, now
   const decisionsStand =
     before.newestRunId === input.newestRunId &&
     before.newestRuleId === input.newestRuleId &&
-    before.newestLeftOutId === input.newestLeftOutId
+    before.newestLeftOutId === input.newestLeftOutId &&
+    before.usesSheet === input.usesSheet
   if (!decisionsStand) return false
   const nothingNew =
     before.newestGradeId === input.newestGradeId &&
     before.newestRulingId === input.newestRulingId &&
-    before.newestCandidateId === input.newestCandidateId
+    before.newestCandidateId === input.newestCandidateId &&
+    before.newestSheetMarkId === input.newestSheetMarkId
   return nothingNew || (tookMs > SLOW_MS && age < SLOW_KEPT_MS)
 }

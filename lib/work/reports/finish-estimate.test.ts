@@ -66,6 +66,7 @@ describe('the looks to come', () => {
     given: 0,
     asked: 0,
     ruled: 0,
+    pass: 'sent on',
   } as const
 
   it('are by the mean rule what is missing of the wanted number, none where a ruling has decided or no picture is', () => {
@@ -79,6 +80,20 @@ describe('the looks to come', () => {
       { ...candidate, truth: 'lens' as const },
     ]
     expect(looksToCome(candidates, rule)).toEqual({ expected: 5, least: 5, most: 5 })
+  })
+
+  it('are none where the first pass did not send on, and of what waits for it as many as it has sent on so far', () => {
+    const rule = { method: 'mean', gradesWanted: 4, leastGrades: 2 } as const
+    const waiting = { ...candidate, pass: 'waiting' as const }
+    const dropped = { ...candidate, pass: 'dropped' as const }
+    expect(looksToCome([dropped], rule)).toEqual({ expected: 0, least: 0, most: 0 })
+    expect(looksToCome([waiting, waiting], rule)).toEqual({ expected: 8, least: 0, most: 8 })
+    // One of four was sent on: of two that wait, 2 x 4 / 4 = 2 looks beside the 4 of that one.
+    expect(looksToCome([candidate, dropped, dropped, dropped, waiting, waiting], rule)).toEqual({
+      expected: 6,
+      least: 4,
+      most: 12,
+    })
   })
 
   it('are by reliability at least one, at most all, and expected from what each look decided of those that came to it', () => {

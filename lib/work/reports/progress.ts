@@ -17,7 +17,8 @@ function* lookTimes(sheet: GradeSheet): Generator<number> {
 }
 
 /**
- * Looks that imaged candidates still want, unless a ruling or the estimate has decided them. By the mean rule that is what is
+ * Looks that imaged candidates still want, unless a ruling, the estimate or the first pass has decided them. What waits for the first
+ * pass may want none. By the mean rule that is what is
  * missing of the wanted number. By reliability a candidate stops at the first look that decides it: at the least that is one
  * look more (or what is missing of the least grades), at the most all of them. What is expected goes by how many of the candidates
  * that came to a look were decided by it, so that those which are not decided yet, and take longer, are in it.
@@ -29,16 +30,25 @@ export function looksToCome(
   const search = candidates.filter(({ truth, imaged }) => truth === null && imaged)
   const expectedAfter = rule.method === 'mean' ? null : expectedLooks(search, rule.gradesWanted)
   const remaining = { expected: 0, least: 0, most: 0 }
-  for (const { given, asked, settled, ruled } of search) {
+  const share = shareSentOn(search)
+  for (const { given, asked, settled, ruled, pass } of search) {
     const wanted = Math.max(rule.gradesWanted, asked)
-    if (ruled || settled || given >= wanted) continue
+    if (ruled || settled || given >= wanted || pass === 'dropped') continue
     const most = wanted - given
     const least = expectedAfter ? Math.min(most, Math.max(1, rule.leastGrades - given)) : most
+    const expected = Math.min(most, Math.max(least, expectedAfter?.[given] ?? most))
     remaining.most += most
-    remaining.least += least
-    remaining.expected += Math.min(most, Math.max(least, expectedAfter?.[given] ?? most))
+    if (pass === 'sent on') remaining.least += least
+    remaining.expected += pass === 'sent on' ? expected : share * expected
   }
   return remaining
+}
+
+/** Of what the first pass has gone over, the share that it sent on: what waits for it is expected to follow. All, as long as it has seen none. */
+function shareSentOn(search: readonly CandidateOfReport[]): number {
+  const sent = search.filter(({ pass }) => pass === 'sent on').length
+  const passed = search.filter(({ pass }) => pass !== 'waiting').length
+  return passed > 0 ? sent / passed : 1
 }
 
 /**

@@ -14,7 +14,7 @@ import { measureScore } from './score-report'
 import { estimateTwoRates, shareOfEffective, type JudgedGrade } from './two-rates'
 import { nearnessOfGraders } from './typical-agreement'
 
-const candidate = { id: 1, truth: null, imaged: 1, settled: 0, given: 0, asked: 0, ruled: 0 } as const
+const candidate = { id: 1, truth: null, imaged: 1, settled: 0, given: 0, asked: 0, ruled: 0, pass: 'sent on' } as const
 
 describe('the score of the machine search against the verdict', () => {
   it('has the area and the points of the reference', () => {
