@@ -61,12 +61,12 @@ describe('the field of view', () => {
     render(<Desk scale={null} />)
     await userEvent.keyboard('f')
     expect(closer()).toBe('')
-    expect(screen.getByText('whole: scale unknown')).toBeTruthy()
+    expect(screen.getByText('Whole: its scale is unknown')).toBeTruthy()
     cleanup()
     render(<Desk scale={0.1} />)
     await userEvent.keyboard('f')
     expect(closer()).toBe('')
-    expect(screen.getByText('whole')).toBeTruthy()
+    expect(screen.getByText('Whole, 8″: no wider than the 12″ field')).toBeTruthy()
   })
 
   it('is remembered, also of a press of the button', async () => {

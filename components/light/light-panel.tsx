@@ -3,6 +3,7 @@
 import { useCallback, useEffect, useRef, type ReactNode } from 'react'
 import { letGo } from '@/components/bench/let-go'
 import type { Curve } from '@/lib/science/imaging/draw-sheet'
+import { moveWhenDrawn } from './held-keys'
 import { LightSlider } from './light-slider'
 import type { LightStore } from './light-store'
 import type { Limit } from './light-settings'
@@ -37,6 +38,7 @@ export default function LightPanel({ light }: { light: LightStore }) {
   const root = useRef<HTMLDivElement>(null)
   useEffect(() => {
     if (light.takeFocus()) root.current?.querySelector('input')?.focus()
+    for (const steps of light.takeHeld()) moveWhenDrawn(light, BLACK_SCALE, readBlack, writeBlack, steps)
   }, [light])
   const curve = useLightFact(light, (now) => now.settings.curve)
   const invert = useLightFact(light, (now) => now.settings.invert)

@@ -1,8 +1,9 @@
 'use client'
 
-import { lazy, Suspense } from 'react'
+import { lazy, Suspense, useEffect } from 'react'
 import { letGo } from '@/components/bench/let-go'
 import { KeyCap } from '@/components/ui/key-cap'
+import { stepsOf } from './held-keys'
 import type { LightStore } from './light-store'
 import { useClose, useLightFact, useZoomScale } from './use-light'
 
@@ -68,10 +69,25 @@ export function LightSection({
         ) : null}
       </div>
       {open ? (
-        <Suspense fallback={<p className="text-note text-mute">Opening …</p>}>
+        <Suspense fallback={<Opening light={light} />}>
           <LightPanel light={light} />
         </Suspense>
       ) : null}
     </section>
   )
+}
+
+/** Whoever opened Light by key goes on with the arrows at once: they are kept for the slider that is to have the focus. */
+function Opening({ light }: { light: LightStore }) {
+  useEffect(() => {
+    const hold = (event: KeyboardEvent) => {
+      const steps = stepsOf(event)
+      if (steps === 0 || !light.hold(steps)) return
+      event.preventDefault()
+      event.stopPropagation()
+    }
+    window.addEventListener('keydown', hold, true)
+    return () => window.removeEventListener('keydown', hold, true)
+  }, [light])
+  return <p className="text-note text-mute">Opening …</p>
 }

@@ -1,6 +1,7 @@
 'use client'
 
 import { useEffect, useId, useRef } from 'react'
+import { moveWhenDrawn, stepsOf } from './held-keys'
 import type { LightStore } from './light-store'
 import { STEPS, type SliderScale } from './slider-scales'
 
@@ -18,7 +19,7 @@ const SLIDER = [
 
 /**
  * A slider that writes into Light and follows it without being rendered: place and figure are set on the elements themselves.
- * Arrow keys and all other keys of a slider are the browser's own.
+ * Arrow keys and all other keys of a slider are the browser's own; pressed before there is a picture, they move it when it comes.
  */
 export function LightSlider({
   light,
@@ -64,6 +65,12 @@ export function LightSlider({
         min={0}
         max={STEPS}
         defaultValue={0}
+        onKeyDown={(event) => {
+          const steps = stepsOf(event)
+          if (steps === 0 || read(light) !== null) return
+          event.preventDefault()
+          moveWhenDrawn(light, scale, read, write, steps)
+        }}
         onInput={(event) => {
           if (read(light) !== null) write(light, scale.value(Number(event.currentTarget.value)))
         }}

@@ -39,6 +39,10 @@ export class LightStore {
   drawn: DrawnView | null = null
   status: LightStatus = 'waiting'
   private focusNext = false
+  /** Steps asked of the first slider before its panel was here. */
+  private held: number[] = []
+  /** Asked of a picture that is not drawn yet. */
+  private waiting: (() => void)[] = []
   private readonly listeners = new Set<() => void>()
   private saving: ReturnType<typeof setTimeout> | undefined
   private candidate: number | null = null
@@ -91,6 +95,7 @@ export class LightStore {
   setOpen(open: boolean, byKey = false): void {
     this.open = open
     this.focusNext = open && byKey
+    this.held = []
     this.changed()
   }
 
@@ -99,6 +104,22 @@ export class LightStore {
     const asked = this.focusNext
     this.focusNext = false
     return asked
+  }
+
+  /** Keeps steps for the slider that is to take the focus; false where none is. */
+  hold(steps: number): boolean {
+    if (this.focusNext) this.held.push(steps)
+    return this.focusNext
+  }
+
+  takeHeld(): number[] {
+    return this.held.splice(0)
+  }
+
+  /** Does it once this candidate's picture is drawn, now where it is; never where it cannot be. */
+  whenDrawn(step: () => void): void {
+    if (this.drawn) step()
+    else this.waiting.push(step)
   }
 
   setKeep(keep: boolean): void {
@@ -126,6 +147,7 @@ export class LightStore {
     this.zoom.reset()
     this.drawn = null
     this.status = 'waiting'
+    this.waiting = []
     if (!this.keep && !first) this.settings = PLAIN_LIGHT
     this.changed()
   }
@@ -133,6 +155,8 @@ export class LightStore {
   setStatus(status: LightStatus, drawn: DrawnView | null): void {
     this.status = status
     this.drawn = drawn
+    const asked = status === 'waiting' ? [] : this.waiting.splice(0)
+    if (drawn) for (const step of asked) step()
     this.tell()
   }
 

@@ -4,6 +4,7 @@ import { useLayoutEffect } from 'react'
 import { afterEach, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
 import { planesAnswer, stubCanvas } from './_light-fixture'
 import { LightSection } from './light-section'
+import { LightStore } from './light-store'
 import { LitBox } from './lit-box'
 import { useLight } from './use-light'
 import { useLightKeys } from './use-light-keys'
@@ -234,6 +235,57 @@ describe('the choice', () => {
     await live()
     expect(says('Black')).toBe('−1.0σ')
     expect(screen.queryByText('changed')).toBeNull()
+  })
+})
+
+describe('arrow keys pressed before the pixels are here', () => {
+  const blackAfter = async (keys: string) => {
+    const { user, unmount } = open()
+    await user.keyboard('l')
+    if (keys) await user.keyboard(keys)
+    await live()
+    await frame()
+    const found = [slider('Black').value, screen.queryByText('changed') !== null]
+    unmount()
+    localStorage.clear()
+    return found
+  }
+
+  it('move the first slider once they come', async () => {
+    const [own] = await blackAfter('')
+    const far = Number(own)
+    expect(await blackAfter('{ArrowRight}{ArrowRight}{ArrowUp}{ArrowLeft}')).toEqual([String(far + 2), true])
+    expect(await blackAfter('{PageUp}')).toEqual([String(far + 40), true])
+    expect(await blackAfter('{Home}')).toEqual(['0', true])
+    expect(await blackAfter('{Control>}{ArrowRight}{/Control}')).toEqual([own, false])
+  })
+
+  it('are kept while the panel itself is on its way, by those who opened it by key', () => {
+    const light = new LightStore('test')
+    light.setOpen(true)
+    expect(light.hold(1)).toBe(false)
+    light.setOpen(true, true)
+    expect([light.hold(1), light.hold(40)]).toEqual([true, true])
+    expect(light.takeHeld()).toEqual([1, 40])
+    light.hold(1)
+    light.setOpen(false)
+    expect(light.takeHeld()).toEqual([])
+  })
+
+  it('are forgotten with the candidate that they were pressed for, and where nothing comes', () => {
+    const light = new LightStore('test')
+    const done: string[] = []
+    const own = { view: 'colour', colour: true, bands: [], own: { black: 0, white: 1, softening: 1 } }
+    light.show(1)
+    light.whenDrawn(() => done.push('of the first'))
+    light.show(2)
+    light.whenDrawn(() => done.push('of the second'))
+    light.setStatus('live', own)
+    light.show(3)
+    light.whenDrawn(() => done.push('of the third'))
+    light.setStatus({ failed: 'The server cannot be reached.' }, null)
+    light.setStatus('live', own)
+    expect(done).toEqual(['of the second'])
   })
 })
 

@@ -94,11 +94,21 @@ export function LitBox({
       ) : null}
       {close && size ? (
         <p className="figures pointer-events-none absolute left-2 top-1.5 text-note text-white [text-shadow:0_0_2px_#000]">
-          {closer > 1 ? `${closeFieldArcsec}″ field` : scale === null ? 'whole: scale unknown' : 'whole'}
+          {closer > 1 ? `${closeFieldArcsec}″ field` : wholeBecause(size, scale, closeFieldArcsec)}
         </p>
       ) : null}
     </div>
   )
+}
+
+/** Why the whole cutout is shown although the close field is asked for. */
+function wholeBecause(
+  { width, height }: { width: number; height: number },
+  scale: number | null,
+  field: number,
+): string {
+  if (scale === null) return 'Whole: its scale is unknown'
+  return `Whole, ${Number((Math.max(width, height) * scale).toFixed(1))}″: no wider than the ${field}″ field`
 }
 
 /** At four times the zoom the box shows a quarter of the picture's side. */
