@@ -69,6 +69,25 @@ function bounded(cosine: number, sine: number, most: number): { size: number; an
   return { size: most * Math.tanh(Math.hypot(cosine, sine) / most), angleDeg: (angle + 180) % 180 }
 }
 
+/** The unknowns at which `lensOf` gives this lens and source, for a search that begins there; what a kind leaves out is left out. */
+export function unknownsOf(kind: LensKind, { lens, source }: LensAndSource, { centre }: HeldLens): number[] {
+  const ellipse = components((1 - lens.axisRatio) / (1 + lens.axisRatio), lens.positionAngleDeg, MOST_ELLIPTICITY)
+  const shear = components(lens.shear?.strength ?? 0, lens.shear?.positionAngleDeg ?? 0, MOST_SHEAR)
+  const place = [source.east - centre.east, source.north - centre.north]
+  return [
+    Math.log(lens.einsteinRadiusArcsec),
+    ...place,
+    ...(hasEllipse(kind) ? ellipse : []),
+    ...(hasShear(kind) ? shear : []),
+  ]
+}
+
+/** The inverse of `bounded`. A size of exactly 0 has no direction and would leave the search without a slope. */
+function components(size: number, angleDeg: number, most: number): [number, number] {
+  const length = Math.max(1e-3, most * Math.atanh(Math.min(size / most, 0.999)))
+  return [length * cosine(2 * angleDeg), length * sine(2 * angleDeg)]
+}
+
 function meanRadius(points: readonly SkyVector[], centre: SkyVector): number {
   const sum = points.reduce((total, { east, north }) => total + Math.hypot(east - centre.east, north - centre.north), 0)
   return sum / points.length

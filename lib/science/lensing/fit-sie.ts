@@ -17,8 +17,10 @@ import {
   parametersOf,
   startsFor,
   stepsFor,
+  unknownsOf,
   type FittedParameter,
   type HeldLens,
+  type LensAndSource,
   type LensKind,
 } from './fit-sie-parameters'
 import { lensModel, type PointImage, type ShearedLens } from './sie-shear'
@@ -36,6 +38,8 @@ export interface FitRequest {
   /** how well a click can be placed, 1 sigma on each axis, arcsec; half a pixel is usual */
   clickErrorArcsec: number
   pixelScaleArcsec: number
+  /** where the search begins and nowhere else, as from a fit made before; all round when left out */
+  start?: LensAndSource
 }
 
 export interface SieFit {
@@ -73,7 +77,8 @@ export function fitSie(request: FitRequest): SieFit {
   const isArc = pointsAre === 'arc'
   const first = isArc ? arcResiduals : linearResiduals
   const start = (parameters: readonly number[]) => first(lensOf(kind, parameters, held), points)
-  const guesses = startsFor(kind, points, held.centre)
+  const starts = request.start ? [unknownsOf(kind, request.start, held)] : startsFor(kind, points, held.centre)
+  const guesses = starts
     .map((guess) => leastSquares(start, guess, { steps, maximumRounds: 60 }))
     .sort((a, b) => a.sum - b.sum)
   let best = guesses[0]
