@@ -10,7 +10,7 @@ import { imageFolder, median, SAME_FOUR, verdict, writeCutouts, type Run } from 
 import { floorOfOwnEncoder, floorOfSharp, type Picture } from './_encoder-floors'
 import { timeOfViews } from './_view-times'
 
-const CANDIDATES = 960
+const USUAL = 960
 const ROUNDS = 3
 /** The aims: so many times the script for its four pictures, and so many times the encoder's floor at most. */
 const AIM_PEER = 4
@@ -32,23 +32,24 @@ async function decodeStamps(folder: string): Promise<Picture[]> {
 }
 
 interface Rates {
+  candidates: number
   runs: Run[]
   own: number[]
   sharp: number[]
 }
 
-async function round(cutouts: string, views: string[] | null, rates: Rates | null): Promise<void> {
+async function round(cutouts: string, candidates: number, views: string[] | null, rates: Rates | null): Promise<void> {
   let pictures: Picture[] = []
   const run = await imageFolder(cutouts, views, async (folder) => {
     pictures = await decodeStamps(folder)
   })
-  if (run.stamps < CANDIDATES * SAME_FOUR.length) throw new Error(`Only ${run.stamps} stamps were made`)
+  if (run.stamps < candidates * SAME_FOUR.length) throw new Error(`Only ${run.stamps} stamps were made`)
   const own = await floorOfOwnEncoder(pictures)
   const bySharp = await floorOfSharp(pictures)
   if (!rates) return
   rates.runs.push(run)
-  rates.own.push(CANDIDATES / own)
-  rates.sharp.push(CANDIDATES / bySharp)
+  rates.own.push(candidates / own)
+  rates.sharp.push(candidates / bySharp)
 }
 
 interface PeerRate {
@@ -108,29 +109,29 @@ function runPython(argv: string[]): Promise<string> {
   })
 }
 
-export async function benchImaging(): Promise<string[]> {
+export async function benchImaging(candidates = USUAL): Promise<string[]> {
   const cutouts = await mkdtemp(path.join(tmpdir(), 'ringside-bench-'))
-  const four: Rates = { runs: [], own: [], sharp: [] }
-  const all: Rates = { runs: [], own: [], sharp: [] }
+  const four: Rates = { candidates, runs: [], own: [], sharp: [] }
+  const all: Rates = { candidates, runs: [], own: [], sharp: [] }
   const alone: (PeerRate | string)[] = []
   const beside: (PeerRate | string)[] = []
   const cores = availableParallelism()
   try {
-    await writeCutouts(cutouts, CANDIDATES)
+    await writeCutouts(cutouts, candidates)
     // The first rounds warm up the workers and the disk's cache.
-    await round(cutouts, null, null)
-    await round(cutouts, SAME_FOUR, null)
+    await round(cutouts, candidates, null, null)
+    await round(cutouts, candidates, SAME_FOUR, null)
     for (let count = 0; count < ROUNDS; count++) {
-      await round(cutouts, SAME_FOUR, four)
+      await round(cutouts, candidates, SAME_FOUR, four)
       alone.push(await runPeers(cutouts, 1))
-      await round(cutouts, null, all)
+      await round(cutouts, candidates, null, all)
       beside.push(await runPeers(cutouts, cores))
     }
   } finally {
     await rm(cutouts, { recursive: true, force: true })
   }
   return [
-    `imaging, ${CANDIDATES} candidates of 3 bands, 80 by 80 pixels, ${workerCount()} workers on ${cores} processors, median of ${ROUNDS} rounds`,
+    `imaging, ${candidates} candidates of 3 bands, 80 by 80 pixels, ${workerCount()} workers on ${cores} processors, median of ${ROUNDS} rounds`,
     '  bytes on disk to committed rows and stored stamps; the script reads the same files and writes the same four pictures, 80 by 80, as PNG',
     ...linesOf('the same four pictures', four),
     ...linesOf('all views', all),
@@ -139,16 +140,16 @@ export async function benchImaging(): Promise<string[]> {
   ]
 }
 
-const rateOf = ({ runs }: Rates): number => CANDIDATES / median(runs.map(({ seconds }) => seconds))
+const rateOf = ({ runs, candidates }: Rates): number => candidates / median(runs.map(({ seconds }) => seconds))
 
-const processorOf = ({ runs }: Rates): number =>
-  median(runs.map(({ processorSeconds }) => (1000 * processorSeconds) / CANDIDATES))
+const processorOf = ({ runs, candidates }: Rates): number =>
+  median(runs.map(({ processorSeconds }) => (1000 * processorSeconds) / candidates))
 
 function linesOf(name: string, rates: Rates): string[] {
   const rate = rateOf(rates)
   const processor = processorOf(rates)
   const [own, bySharp] = [median(rates.own), median(rates.sharp)]
-  const views = rates.runs[0].stamps / CANDIDATES
+  const views = rates.runs[0].stamps / rates.candidates
   const against = (floor: number) =>
     `${floor.toFixed(0)} (${(floor / rate).toFixed(2)} times; aim ${AIM_FLOOR}: ${verdict(floor <= AIM_FLOOR * rate)})`
   return [
