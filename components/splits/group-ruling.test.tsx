@@ -33,6 +33,7 @@ const groupOf = (ruled: number[], refused: number[] = []): GroupState => ({
       name: `SWS000${id}`,
       rulingId: 70 + id,
       asksWithdrawn: id === 1 ? 1 : 0,
+      sentOn: false,
       state: 'set aside' as const,
     })),
     refused: refused.map((id) => ({ candidateId: id, name: `SWS000${id}`, reason: 'plover has ruled meanwhile.' })),

@@ -13,6 +13,7 @@ import { conflict, notFound } from '@/lib/platform/problems/problem'
 import { applyStates, type StateOutcome } from '@/lib/work/consensus/apply-state'
 import { ruleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { sendOnDropped } from '@/lib/work/sheet/send-on'
 import { RulingInput } from './ruling-input'
 
 export interface RulingAnswer {
@@ -20,6 +21,8 @@ export interface RulingAnswer {
   state: CandidateState
   /** Asked looks that nobody has to give any more; a later ruling does not ask for them again. */
   asksWithdrawn: number
+  /** The first pass had not sent it on; reopening does. */
+  sentOn: boolean
 }
 
 /**
@@ -49,6 +52,8 @@ export async function ruleOnCandidate(
     const rulingId = await insertRuling(transaction, row)
     const decides = outcome === 'confirmed' || outcome === 'set aside'
     const asksWithdrawn = decides ? await setAsksWithdrawn(transaction, { candidateId }, now) : 0
+    // What is to be looked at again must reach the bench.
+    const sentOn = outcome === 'open' && (await sendOnDropped(transaction, permit, candidateId, now))
     const result = await outcomeOf(transaction, candidate, ruling, rulingId)
     await applyStates(transaction, permit.campaign, [result], now)
     await recordEvent(transaction, {
@@ -56,9 +61,16 @@ export async function ruleOnCandidate(
       campaignId: permit.campaign.id,
       action: 'rulings.ruled',
       subject: candidate.name,
-      detail: { ruling: rulingId, outcome, grade, from: candidate.state, to: result.state },
+      detail: {
+        ruling: rulingId,
+        outcome,
+        grade,
+        from: candidate.state,
+        to: result.state,
+        ...(sentOn ? { sentOn } : {}),
+      },
     })
-    return { rulingId, state: result.state, asksWithdrawn }
+    return { rulingId, state: result.state, asksWithdrawn, sentOn }
   })
 }
 

@@ -24,9 +24,9 @@ export async function ruleOnCandidateAction(
 ): Promise<FormState> {
   try {
     const { db, permit } = await permitLead(slug)
-    const { state } = await ruleOnCandidate(db, permit, candidateId, parseRulingForm(form))
+    const { state, sentOn } = await ruleOnCandidate(db, permit, candidateId, parseRulingForm(form))
     revalidatePath(`/campaigns/${slug}`, 'layout')
-    return { done: `Ruled: it is ${state} now.` }
+    return { done: `Ruled: it is ${state} now${sentOn ? ', and sent on to the bench' : ''}.` }
   } catch (error) {
     // What the lead has not seen yet, such as another lead's ruling, comes with the refusal.
     if (error instanceof Problem && error.status === 409) revalidatePath(`/campaigns/${slug}`, 'layout')
