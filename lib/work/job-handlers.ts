@@ -5,6 +5,7 @@ import { sendMailJob } from '@/lib/platform/mail/deliver-mail'
 import { paintStampsJob } from './calibration/paint-job'
 import { consensusJob } from './consensus/consensus-job'
 import { unpackArchivesJob } from './intake/archives/unpack-job'
+import { makeReleaseJob } from './releases/make-release-job'
 import { imageCandidatesJob, readFilesJob } from './stamps/imaging-jobs'
 
 const quickJobs: JobHandlers = {
@@ -17,6 +18,7 @@ const longJobs: JobHandlers = {
   [JOB.unpackArchives]: unpackArchivesJob,
   [JOB.imageCandidates]: imageCandidatesJob,
   [JOB.paintStamps]: paintStampsJob,
+  [JOB.makeRelease]: makeReleaseJob,
 }
 
 /** Every kind of job and who does it, a loop each entry: verdicts and letters never wait for a long intake. */

@@ -9,6 +9,7 @@ import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-forc
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { catalogueEntries, type CatalogueEntry } from './catalogue-entries'
 import { CAUTION, EXPORT_COLUMNS } from './export-columns'
+import { ruleInWords } from './rule-in-words'
 
 export type ExportFormat = 'csv' | 'vot'
 
@@ -69,25 +70,9 @@ function votableMeta({ campaign }: CampaignPermit<'read'>, rule: RuleInForce, no
       { name: 'caution', value: CAUTION },
       { name: 'survey', value: campaign.survey },
       { name: 'campaign', value: campaign.name },
-      { name: 'rule', value: ruleInWords(rule) },
+      { name: 'rule', value: ruleInWords(rule, 'in force at the time of export') },
       { name: 'exported_at', value: now },
       { name: 'software', value: 'Ringside' },
     ],
   }
-}
-
-function ruleInWords(rule: RuleInForce): string {
-  if (rule.method === 'reliability') {
-    return (
-      `Rule ${rule.version}, in force at the time of export: by the reliability of the graders (Dawid & Skene 1979) and a sequential ` +
-      `test (Wald 1945); at most ${rule.mostLooks} looks and at least ${rule.leastGrades} grades; share of non-lenses that may be ` +
-      `confirmed ${rule.falseConfirmed}, share of lenses that may be set aside ${rule.missedLens}; split in between; rulings of a ` +
-      'lead stand over it.'
-    )
-  }
-  return (
-    `Rule ${rule.version}, in force at the time of export: ${rule.gradesWanted} grades wanted and at least ${rule.leastGrades}; ` +
-    `grade points A 3, B 2, C 1, N 0; confirmed from a mean of ${rule.confirmMean}, set aside up to ${rule.setAsideMean}, ` +
-    `split above a population standard deviation of ${rule.splitSpread} and in between; rulings of a lead stand over it.`
-  )
 }
