@@ -6,6 +6,7 @@ import { paintStampsJob } from './calibration/paint-job'
 import { consensusJob } from './consensus/consensus-job'
 import { unpackArchivesJob } from './intake/archives/unpack-job'
 import { makeReleaseJob } from './releases/make-release-job'
+import { matchCandidatesJob, matchListJob, readListJob } from './matching/list-jobs'
 import { imageCandidatesJob, readFilesJob } from './stamps/imaging-jobs'
 
 const quickJobs: JobHandlers = {
@@ -21,5 +22,12 @@ const longJobs: JobHandlers = {
   [JOB.makeRelease]: makeReleaseJob,
 }
 
+/** One at a time, so that a list is never read twice at once. */
+const matchJobs: JobHandlers = {
+  [JOB.readList]: readListJob,
+  [JOB.matchList]: matchListJob,
+  [JOB.matchCandidates]: matchCandidatesJob,
+}
+
 /** Every kind of job and who does it, a loop each entry: verdicts and letters never wait for a long intake. */
-export const jobLoops: readonly JobHandlers[] = [quickJobs, longJobs, longJobs]
+export const jobLoops: readonly JobHandlers[] = [quickJobs, longJobs, longJobs, matchJobs]
