@@ -1,5 +1,5 @@
 import 'server-only'
-import { Readable } from 'node:stream'
+import { type Readable } from 'node:stream'
 import type { Kysely } from 'kysely'
 import { findReleaseBefore } from '@/db/queries/release-changes'
 import { insertReleaseFile } from '@/db/queries/release-making'
