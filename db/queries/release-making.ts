@@ -279,3 +279,30 @@ export async function insertReleaseFile(db: Kysely<DB>, file: ReleaseFile): Prom
     .onConflict((conflict) => conflict.doNothing())
     .execute()
 }
+
+/** Grades that came after the newest run. */
+export async function countNewGrades(db: Kysely<DB>, campaignId: number): Promise<number> {
+  const row = await db
+    .selectFrom('grade')
+    .select((e) => e.fn.countAll<number>().as('count'))
+    .where(inCampaign('grade.campaign_id', campaignId))
+    .where('id', '>', (e) =>
+      e
+        .selectFrom('run')
+        .select((r) => r.fn.coalesce(r.fn.max('newest_grade_id'), sql<number>`0`).as('id'))
+        .where('run.campaign_id', '=', campaignId),
+    )
+    .executeTakeFirstOrThrow()
+  return row.count
+}
+
+export async function countCalibrationStamps(db: Kysely<DB>, campaignId: number): Promise<number> {
+  const row = await db
+    .selectFrom('candidate')
+    .select((e) => e.fn.countAll<number>().as('count'))
+    .where('campaign_id', '=', campaignId)
+    .where('truth', 'is not', null)
+    .where('imaged_at', 'is not', null)
+    .executeTakeFirstOrThrow()
+  return row.count
+}
