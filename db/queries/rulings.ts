@@ -27,6 +27,10 @@ export async function listRulingsOf(db: Kysely<DB>, candidateId: number): Promis
     .execute()
 }
 
+export async function findRuling(db: Kysely<DB>, rulingId: number): Promise<Ruling | null> {
+  return (await db.selectFrom('ruling').selectAll().where('id', '=', rulingId).executeTakeFirst()) ?? null
+}
+
 /** The candidate's newest ruling, unless it handed the candidate back to the verdict. */
 export async function findStandingRuling(db: Kysely<DB>, candidateId: number): Promise<Ruling | null> {
   const row = await db

@@ -4,6 +4,7 @@ import { setAsksWithdrawn } from '@/db/queries/asked-looks'
 import { findCandidate } from '@/db/queries/candidates'
 import { listVerdictsOf } from '@/db/queries/verdicts'
 import { countLiveLeases } from '@/db/queries/grading'
+import { findStandingMerge } from '@/db/queries/merges'
 import { insertRuling, listRulingsOf } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import type { Candidate, CandidateState } from '@/db/schema/intake'
@@ -29,7 +30,7 @@ export interface RulingAnswer {
  * A lead decides a candidate. The ruling is appended and stands over every verdict until a newer ruling; 'by verdict' steps
  * back, and the newest verdict holds again. Looks that were asked for are withdrawn when it is decided. State, change, catalogue and
  * audit event are written with it or not at all.
- * @throws Problem 404 no such candidate here; 409 `calibration`, `ruled-meanwhile`, `no-ruling`. ZodError on bad input.
+ * @throws Problem 404 no such candidate here; 409 `calibration`, `merged`, `ruled-meanwhile`, `no-ruling`. ZodError on bad input.
  */
 export async function ruleOnCandidate(
   db: Kysely<DB>,
@@ -39,39 +40,66 @@ export async function ruleOnCandidate(
 ): Promise<RulingAnswer> {
   const ruling = RulingInput.parse(input)
   return db.transaction().execute(async (transaction) => {
-    const candidate = await findCandidate(transaction, permit.campaign.id, candidateId)
-    if (!candidate) throw notFound('candidate')
-    await assertCanRule(transaction, candidate, ruling)
-    const now = isoTime()
-    const { outcome, grade, reason } = ruling
-    const personId = permit.viewer.id
-    const { gradesWanted } = await ruleInForce(transaction, permit.campaign.id)
-    const { own, others } = await countLiveLeases(transaction, candidateId, personId, now)
-    const looksAsked = looksAskedBy(outcome, candidate, gradesWanted, own + others)
-    const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
-    const rulingId = await insertRuling(transaction, row)
-    const decides = outcome === 'confirmed' || outcome === 'set aside'
-    const asksWithdrawn = decides ? await setAsksWithdrawn(transaction, { candidateId }, now) : 0
-    // What is to be looked at again must reach the bench.
-    const sentOn = outcome === 'open' && (await sendOnDropped(transaction, permit, candidateId, now))
-    const result = await outcomeOf(transaction, candidate, ruling, rulingId)
-    await applyStates(transaction, permit.campaign, [result], now)
-    await recordEvent(transaction, {
-      personId,
-      campaignId: permit.campaign.id,
-      action: 'rulings.ruled',
-      subject: candidate.name,
-      detail: {
-        ruling: rulingId,
-        outcome,
-        grade,
-        from: candidate.state,
-        to: result.state,
-        ...(sentOn ? { sentOn } : {}),
-      },
-    })
-    return { rulingId, state: result.state, asksWithdrawn, sentOn }
+    const candidate = await requireCandidate(transaction, permit, candidateId)
+    const merge = await findStandingMerge(transaction, candidateId)
+    if (merge) {
+      throw conflict(
+        'merged',
+        `${candidate.name} was merged into ${merge.keptName}: rule on that one, or part the two first.`,
+      )
+    }
+    return ruleWithin(transaction, permit, candidate, ruling)
   })
+}
+
+export async function requireCandidate(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  candidateId: number,
+): Promise<Candidate> {
+  const candidate = await findCandidate(db, permit.campaign.id, candidateId)
+  if (!candidate) throw notFound('candidate')
+  return candidate
+}
+
+/** The same within a transaction of the caller's, who has seen to it that the candidate is not merged: for merging and parting. */
+export async function ruleWithin(
+  transaction: Kysely<DB>,
+  permit: CampaignPermit<'lead'>,
+  candidate: Candidate,
+  ruling: RulingInput,
+): Promise<RulingAnswer> {
+  const { id: candidateId } = candidate
+  await assertCanRule(transaction, candidate, ruling)
+  const now = isoTime()
+  const { outcome, grade, reason } = ruling
+  const personId = permit.viewer.id
+  const { gradesWanted } = await ruleInForce(transaction, permit.campaign.id)
+  const { own, others } = await countLiveLeases(transaction, candidateId, personId, now)
+  const looksAsked = looksAskedBy(outcome, candidate, gradesWanted, own + others)
+  const row = { candidateId, personId, outcome, grade, reason, looksAsked, now }
+  const rulingId = await insertRuling(transaction, row)
+  const decides = outcome === 'confirmed' || outcome === 'set aside'
+  const asksWithdrawn = decides ? await setAsksWithdrawn(transaction, { candidateId }, now) : 0
+  // What is to be looked at again must reach the bench.
+  const sentOn = outcome === 'open' && (await sendOnDropped(transaction, permit, candidateId, now))
+  const result = await outcomeOf(transaction, candidate, ruling, rulingId)
+  await applyStates(transaction, permit.campaign, [result], now)
+  await recordEvent(transaction, {
+    personId,
+    campaignId: permit.campaign.id,
+    action: 'rulings.ruled',
+    subject: candidate.name,
+    detail: {
+      ruling: rulingId,
+      outcome,
+      grade,
+      from: candidate.state,
+      to: result.state,
+      ...(sentOn ? { sentOn } : {}),
+    },
+  })
+  return { rulingId, state: result.state, asksWithdrawn, sentOn }
 }
 
 /**
