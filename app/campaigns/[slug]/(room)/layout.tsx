@@ -32,6 +32,7 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
       : []),
     ...(permit.role === 'grader' ? [] : [{ href: `${home}/agreement`, label: 'Agreement' }]),
     { href: `${home}/catalogue`, label: 'Catalogue', count: count('confirmed') },
+    ...(permit.role === 'grader' ? [] : [{ href: `${home}/releases`, label: 'Releases' }]),
     ...(lead
       ? [
           { href: `${home}/calibration`, label: 'Calibration' },

@@ -1,0 +1,58 @@
+'use server'
+
+import { revalidatePath } from 'next/cache'
+import { redirect } from 'next/navigation'
+import { permitLead } from '@/app/_lib/action-permit'
+import { failedForm, type FormState } from '@/app/_lib/form-state'
+import { config } from '@/lib/platform/config/config'
+import { changeAccess, type AccessInput } from '@/lib/work/releases/change-access'
+import { makeAgain } from '@/lib/work/releases/make-again'
+import { publishRelease } from '@/lib/work/releases/publish-release'
+import { releaseAddress } from '@/lib/work/releases/release-address'
+import type { ReleaseInput } from '@/lib/work/releases/release-input'
+
+/** Freezes a release and goes to the list, where its files are seen coming. */
+export async function publishAction(slug: string, _before: FormState, form: FormData): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await publishRelease(db, permit, Object.fromEntries(form) as ReleaseInput)
+  } catch (error) {
+    return failedForm(error, form)
+  }
+  revalidatePath(`/campaigns/${slug}`, 'layout')
+  redirect(`/campaigns/${slug}/releases`)
+}
+
+export async function accessAction(
+  slug: string,
+  number: number,
+  _before: FormState,
+  form: FormData,
+): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    const { access, token } = await changeAccess(db, permit, number, Object.fromEntries(form) as AccessInput)
+    revalidatePath(`/campaigns/${slug}/releases`)
+    if (token) {
+      const link = `${releaseAddress(config().siteUrl, slug, number)}?key=${token}`
+      const done = 'Whoever has this link can read the release. It is shown this once; a new link ends this one.'
+      return { done, values: { access, link } }
+    }
+    const said = { private: 'closed: leads and viewers of the campaign read it', public: 'public now' }
+    return { done: `Release ${number} is ${access === 'public' ? said.public : said.private}.`, values: { access } }
+  } catch (error) {
+    return failedForm(error, form)
+  }
+}
+
+/** Asks for the files of a release once more where making them failed. */
+export async function makeAgainAction(slug: string, number: number, _before: FormState): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await makeAgain(db, permit, number)
+  } catch (error) {
+    return failedForm(error, new FormData())
+  }
+  revalidatePath(`/campaigns/${slug}/releases`)
+  return { done: 'Its files are being made again; what is there is kept.' }
+}

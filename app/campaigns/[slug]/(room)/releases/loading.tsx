@@ -1,0 +1,5 @@
+import { PageSkeleton } from '@/components/campaigns/page-skeleton'
+
+export default function LoadingReleases() {
+  return <PageSkeleton />
+}
