@@ -10,6 +10,7 @@ import { useLightKeys } from '@/components/light/use-light-keys'
 import { Discussion } from '@/components/discussion/discussion'
 import { AskedLooks, type Talk } from '@/components/discussion/talk'
 import type { FormAction } from '@/components/people/use-kept-form'
+import { useEvidenceDesk, type Measuring } from '@/components/measuring/evidence-desk'
 import { KeyLine } from '@/components/splits/key-line'
 import { CopyText } from '@/components/table/copy-text'
 import { ButtonLink } from '@/components/ui/button'
@@ -52,6 +53,8 @@ export interface EvidenceScreenProps {
   ruleAction: FormAction | null
   /** For leads, where the first pass did not send it on. */
   sendOnAction?: FormAction | null
+  /** null: withheld, like the judgement. */
+  measuring?: Measuring | null
 }
 
 function Section({ title, children }: { title: string; children: ReactNode }) {
@@ -65,7 +68,7 @@ function Section({ title, children }: { title: string; children: ReactNode }) {
 
 /** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
 export function EvidenceScreen(props: EvidenceScreenProps) {
-  const { slug, personId, evidence, neighbours, talk, asked, ruleAction, sendOnAction } = props
+  const { slug, personId, evidence, neighbours, talk, asked, ruleAction, sendOnAction, measuring } = props
   const [view, setView] = useState(0)
   const [blinking, setBlinking] = useState(false)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
@@ -76,6 +79,7 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
     if (index < evidence.pictures.views.length) setView(index)
   })
   const { judgement } = evidence
+  const desk = useEvidenceDesk(measuring ?? null, evidence.pictures, light, evidence.pictures.views[view])
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-6 px-4 py-5 md:px-8 md:py-6">
       <Neighbours slug={slug} {...neighbours} />
@@ -98,8 +102,12 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
         <Position raDeg={evidence.raDeg} decDeg={evidence.decDeg} />
         {judgement ? <StateReason judgement={judgement} /> : null}
       </header>
-      <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_22rem]">
-        <div className="flex min-w-0 flex-col gap-6">
+      <div className="flex flex-col gap-8 lg:grid lg:grid-cols-[minmax(0,1fr)_22rem] lg:items-start">
+        <div
+          className={`flex min-w-0 flex-col gap-6 ${
+            desk.measuring ? 'sticky top-0 z-10 -my-2 bg-page py-2 max-lg:[&>:not(:first-child)]:hidden' : ''
+          }`}
+        >
           <div>
             <ViewsTray
               name={evidence.name}
@@ -110,8 +118,11 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
               viewKeys
               light={light}
               blinking={blinking}
+              over={desk.over}
+              alone={desk.measuring}
             />
             <KeyLine on={keysOn} onSwitch={setKeysOn} keys={EVIDENCE_KEYS} />
+            {desk.starts}
           </div>
           {judgement?.why && judgement.verdict ? (
             <Section title={`Why the verdict is ‘${judgement.verdict.outcome}’`}>
@@ -125,7 +136,9 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
           <CandidateFacts evidence={evidence} />
         </div>
         <div className="flex min-w-0 flex-col gap-7">
+          {desk.panel}
           {judgement ? <JudgementColumn judgement={judgement} talk={talk} /> : <Withheld slug={slug} asked={asked} />}
+          {desk.list ? <Section title="Measured on the picture">{desk.list}</Section> : null}
           {sendOnAction ? (
             <Section title="Not sent on">
               <SendOn action={sendOnAction} />

@@ -1,12 +1,12 @@
 'use client'
 
-import { useState, type CSSProperties } from 'react'
+import { useState, type CSSProperties, type ReactNode } from 'react'
 import { useHoldAndSwipe } from '@/components/bench/use-hold-and-swipe'
 import { LightSection } from '@/components/light/light-section'
 import type { LightStore } from '@/components/light/light-store'
 import { LitBox } from '@/components/light/lit-box'
 import { StampFigure } from '@/components/ui/stamp-figure'
-import type { CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
+import type { CandidatePictures, PictureView } from '@/lib/work/stamps/candidate-pictures'
 
 /**
  * All views of a candidate on the black tray: one large, every one as a slide at its side (below it on a phone). Black in
@@ -21,6 +21,8 @@ export function ViewsTray({
   viewKeys,
   light,
   blinking,
+  over,
+  alone = false,
 }: {
   name: string
   pictures: CandidatePictures
@@ -33,6 +35,10 @@ export function ViewsTray({
   light: LightStore
   /** A key is held that shows the view before. */
   blinking: boolean
+  /** What lies over the large picture, and how the picture itself is drawn to make room around it. */
+  over?: { layer: (view: PictureView) => ReactNode; transform?: string }
+  /** On a narrow screen only the picture, so that there is room below it. */
+  alone?: boolean
 }) {
   const { views } = pictures
   const [held, setHeld] = useState(false)
@@ -54,33 +60,36 @@ export function ViewsTray({
       >
         <div className="min-w-0">
           <div {...hold} className="relative aspect-square select-none overflow-hidden bg-black">
-            <LitBox
-              light={light}
-              planesUrl={view.url ? pictures.planesUrl : null}
-              view={view.key}
-              size={view.url ? view : null}
-              geometry={view.geometry}
-              closeFieldArcsec={pictures.closeFieldArcsec}
-              scrolls
-            >
-              <StampFigure
-                src={view.url}
-                alt={`${view.label} of ${name}`}
-                width={view.width}
-                height={view.height}
-                geometry={null}
-              />
-            </LitBox>
+            <div className="absolute inset-0" style={{ transform: over?.transform }}>
+              <LitBox
+                light={light}
+                planesUrl={view.url ? pictures.planesUrl : null}
+                view={view.key}
+                size={view.url ? view : null}
+                geometry={view.geometry}
+                closeFieldArcsec={pictures.closeFieldArcsec}
+                scrolls
+              >
+                <StampFigure
+                  src={view.url}
+                  alt={`${view.label} of ${name}`}
+                  width={view.width}
+                  height={view.height}
+                  geometry={null}
+                />
+              </LitBox>
+            </div>
+            {view.url ? over?.layer(view) : null}
           </div>
           <figcaption className="px-0.5 pt-1.5 text-note text-tray-text">
             {view.label}
             {view.note ? <span className="text-text">. {view.note}</span> : null}
           </figcaption>
-          <LightSection light={light} keys={keys} className="px-0.5 pt-1" />
+          <LightSection light={light} keys={keys} className={`px-0.5 pt-1 ${alone ? 'max-lg:hidden' : ''}`} />
         </div>
         <ol
           aria-label="Views"
-          className={`flex gap-2 overflow-x-auto p-0.5 sm:flex-col sm:gap-1 sm:overflow-x-visible ${
+          className={`${alone ? 'max-sm:hidden' : ''} flex gap-2 overflow-x-auto p-0.5 sm:flex-col sm:gap-1 sm:overflow-x-visible ${
             paired ? 'sm:@max-[36rem]:grid sm:@max-[36rem]:grid-cols-2 sm:@max-[36rem]:content-start' : ''
           }`}
         >

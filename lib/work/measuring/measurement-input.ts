@@ -66,7 +66,12 @@ export type MeasuredShape = z.output<typeof MeasuredShape>
 export type ModelShape = z.output<typeof ModelShape>
 
 export const MeasurementInput = z.object({
-  uid: z.uuid('A measurement carries an id made by whoever sends it (a UUID).'),
+  uid: z
+    .string()
+    .regex(
+      /^[0-9A-Za-z-]{16,64}$/,
+      'A measurement carries an id of 16 to 64 letters and digits, made by whoever sends it.',
+    ),
   /** Key of the view that it was made on. */
   view: z.string().min(1).max(60),
   pixelScaleArcsec: z

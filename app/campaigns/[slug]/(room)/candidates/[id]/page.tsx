@@ -8,6 +8,7 @@ import { neighboursOf } from '@/lib/work/rulings/find-neighbours'
 import { candidateName } from '@/lib/work/rulings/candidate-name'
 import { isNotSentOn } from '@/lib/work/sheet/pass-of-candidate'
 import { ruleOnCandidateAction, sendOnAction } from './actions'
+import { measuringOf } from './measuring'
 import { talkOf } from './talk'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
@@ -37,6 +38,7 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
       neighbours={await neighboursOf(db, permit, id)}
       talk={await talkOf(db, permit, id, { calibration: evidence.judgement?.calibration ?? false })}
       asked={evidence.judgement ? null : await askOfMe(db, permit, id)}
+      measuring={await measuringOf(db, permit, id)}
       sendOnAction={await sendOnOf(slug, id, permit.role)}
       ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}
     />

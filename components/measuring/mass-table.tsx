@@ -1,0 +1,56 @@
+import type { Cosmology } from '@/lib/science/lensing/cosmology'
+import type { EinsteinMass, Interval } from '@/lib/science/lensing/einstein-mass'
+import { cosmologyInWords } from '@/lib/work/campaigns/cosmology-of'
+import { powerOfTen, threeDigits } from './in-figures'
+
+const plain = ({ value, low, high }: Interval) => ({
+  value: threeDigits(value),
+  between: low === high ? null : `${threeDigits(low)} to ${threeDigits(high)}`,
+})
+
+function mass({ value, low, high }: Interval) {
+  const exponent = Math.floor(Math.log10(value))
+  const between = low === high ? null : `${powerOfTen(low, exponent)} to ${powerOfTen(high, exponent)}`
+  return { value: powerOfTen(value, exponent), between }
+}
+
+/** What the Einstein radius weighs, each with the middle 68 % that errors and ranges leave. */
+export function MassTable({ mass: found, cosmology }: { mass: EinsteinMass; cosmology: Cosmology }) {
+  const rows = [
+    ['Velocity dispersion, SIS', 'km/s', plain(found.velocityDispersionKmS)],
+    ['Mass inside the radius', 'M☉', mass(found.massSolar)],
+    ['Critical surface density', 'M☉/pc²', plain(found.criticalDensitySolarPerPc2)],
+    ['Einstein radius', 'kpc', plain(found.radiusKpc)],
+  ] as const
+  return (
+    <div className="flex flex-col gap-2">
+      <dl className="figures flex flex-col gap-1 text-small">
+        {rows.map(([name, unit, { value, between }]) => (
+          <div key={name} className="flex flex-wrap justify-between gap-x-4">
+            <dt className="font-sans text-note text-mute">{name}</dt>
+            <dd className="text-right">
+              {value} {unit}
+              {found.isAssumed ? <span className="font-sans text-note text-mute"> assumed</span> : null}
+              {between ? <span className="block text-note text-mute">{between}</span> : null}
+            </dd>
+          </div>
+        ))}
+      </dl>
+      <Remarks lines={found.unusual.map(({ sentence }) => sentence)} strong />
+      <Remarks lines={found.notes} />
+      <p className="text-note text-mute">{cosmologyInWords(cosmology)}.</p>
+    </div>
+  )
+}
+
+/** Sentences on numbers: pointed out, never refused. */
+export function Remarks({ lines, strong = false }: { lines: readonly string[]; strong?: boolean }) {
+  if (lines.length === 0) return null
+  return (
+    <ul className={`flex flex-col gap-1 text-note ${strong ? 'border-l-4 border-split pl-2.5' : 'text-mute'}`}>
+      {lines.map((line) => (
+        <li key={line}>{line}</li>
+      ))}
+    </ul>
+  )
+}
