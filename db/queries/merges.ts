@@ -257,3 +257,32 @@ export async function listMembers(
     .$narrowType<{ raDeg: number; decDeg: number }>()
     .execute()
 }
+
+export interface DuplicateOf {
+  id: number
+  name: string
+  state: CandidateState
+  separationArcsec: number
+  decision: Decision | null
+}
+
+/** Candidates of the campaign within the radius of this one, nearest first. */
+export async function listDuplicatesOf(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateId: number,
+  radiusArcsec: number,
+): Promise<DuplicateOf[]> {
+  const { rows } = await sql<DuplicateOf>`
+    select other.id, other.name, other.state, m.separation_arcsec as separationArcsec,
+      (select d.decision from match_decision d
+        where d.candidate_id = m.first_id and d.other_id = m.second_id order by d.id desc limit 1) as decision
+    from (select first_id, second_id, second_id as other_id, separation_arcsec from candidate_match
+            where first_id = ${candidateId}
+          union all select first_id, second_id, first_id, separation_arcsec from candidate_match
+            where second_id = ${candidateId}) m
+      join candidate other on other.id = m.other_id
+    where other.campaign_id = ${campaignId} and other.truth is null and m.separation_arcsec <= ${radiusArcsec}
+    order by m.separation_arcsec, other.id`.execute(db)
+  return rows
+}

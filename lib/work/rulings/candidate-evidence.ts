@@ -21,6 +21,7 @@ import { describeRuling } from './describe-ruling'
 import type { ReliabilityWhy } from './explain-reliability'
 import { findWhy } from './find-why'
 import { reasonInShort } from './reason-in-short'
+import { withoutMergedNames } from './without-merged-names'
 
 /** Everything there is to say about one candidate, for the case of a split and for the candidate's page. */
 export interface CandidateEvidence {
@@ -167,7 +168,8 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
     listLeftOutNow(db, permit.campaign.id),
   ])
   const verdicts = verdictRows.map(({ rule, ...verdict }) => ({ ...verdict, rule: ruleOf(rule) }))
-  const rulings = rulingRows.map((row) => ({
+  const toldRulings = onlyOwn ? await withoutMergedNames(db, permit, rulingRows) : rulingRows
+  const rulings = toldRulings.map((row) => ({
     id: row.id,
     by: by(row),
     outcome: row.outcome,
