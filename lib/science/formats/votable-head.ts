@@ -26,9 +26,12 @@ export interface VotableMeta {
   /** QUERY_STATUS OK is added unless given here */
   infos: readonly VotableInfo[]
   params?: readonly VotableParam[]
+  /** What is told behind the table, such as that rows were left out (DALI 1.1 section 4.4.1: QUERY_STATUS OVERFLOW). */
+  infosBehind?: readonly VotableInfo[]
 }
 
-export const VOTABLE_TAIL = '</DATA>\n</TABLE>\n</RESOURCE>\n</VOTABLE>\n'
+export const votableTail = ({ infosBehind = [] }: VotableMeta): string =>
+  ['</DATA>', '</TABLE>', ...infosBehind.map(infoElement), '</RESOURCE>', '</VOTABLE>', ''].join('\n')
 
 /** Up to and with the element that opens DATA. */
 export function votableHead<Row>(meta: VotableMeta, columns: readonly Column<Row>[]): string {
@@ -46,7 +49,7 @@ export function votableHead<Row>(meta: VotableMeta, columns: readonly Column<Row
     ...(refs.has(ICRS_ID) ? [`<COOSYS ID="${ICRS_ID}" system="ICRS"/>`] : []),
     ...(refs.has(UTC_ID) ? [`<TIMESYS ID="${UTC_ID}" timescale="UTC" refposition="TOPOCENTER"/>`] : []),
     '<RESOURCE type="results">',
-    ...infos.map((info) => `<INFO${attributes({ name: info.name, value: info.value })}/>`),
+    ...infos.map(infoElement),
     ...params.map(paramElement),
     `<TABLE${attributes({ name: meta.tableName })}>`,
     `<DESCRIPTION>${escapeXml(meta.description)}</DESCRIPTION>`,
@@ -54,6 +57,8 @@ export function votableHead<Row>(meta: VotableMeta, columns: readonly Column<Row
     '<DATA>\n',
   ].join('\n')
 }
+
+const infoElement = ({ name, value }: VotableInfo): string => `<INFO${attributes({ name, value })}/>`
 
 function fieldElement<Row>(column: Column<Row>): string {
   const isId = /^[A-Za-z_][\w.-]*$/.test(column.name) && column.name !== ICRS_ID && column.name !== UTC_ID

@@ -7,7 +7,7 @@
  */
 import type { CellValue, Column, Datatype } from '@/lib/science/formats/columns'
 import { cellText } from '@/lib/science/formats/votable-cell'
-import { votableHead, VOTABLE_TAIL, type VotableMeta } from '@/lib/science/formats/votable-head'
+import { votableHead, votableTail, type VotableMeta } from '@/lib/science/formats/votable-head'
 import { replaceIllegal } from '@/lib/science/formats/xml-text'
 
 /** A multiple of 3, so that pieces of base64 join without padding. */
@@ -38,7 +38,7 @@ export async function* votableBinary2Document<Row>(
       if (bytes.length >= CHUNK_BYTES) yield bytes.takeBase64()
     }
   }
-  yield bytes.takeRest() + '</STREAM>\n</BINARY2>\n' + VOTABLE_TAIL
+  yield bytes.takeRest() + '</STREAM>\n</BINARY2>\n' + votableTail(meta)
 }
 
 function isText(datatype: Datatype): boolean {

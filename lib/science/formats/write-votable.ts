@@ -6,7 +6,7 @@
  */
 import type { Column } from '@/lib/science/formats/columns'
 import { cellText } from '@/lib/science/formats/votable-cell'
-import { votableHead, VOTABLE_TAIL, type VotableMeta } from '@/lib/science/formats/votable-head'
+import { votableHead, votableTail, type VotableMeta } from '@/lib/science/formats/votable-head'
 import { escapeXml } from '@/lib/science/formats/xml-text'
 
 export type { VotableInfo, VotableMeta, VotableParam } from '@/lib/science/formats/votable-head'
@@ -41,7 +41,7 @@ export async function* votableDocument<Row>(
       chunk = ''
     }
   }
-  yield chunk + '</TABLEDATA>\n' + VOTABLE_TAIL
+  yield chunk + '</TABLEDATA>\n' + votableTail(meta)
 }
 
 function rowWriter<Row>(columns: readonly Column<Row>[]): (row: Row, rowNumber: number) => string {
