@@ -12,6 +12,7 @@ import * as toldTruth from './011-told-truth'
 import * as matching from './012-matching'
 import * as measuring from './013-measuring'
 import * as releases from './014-releases'
+import * as listing from './015-listing'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -28,4 +29,5 @@ export const migrations: Record<string, Migration> = {
   '012-matching': matching,
   '013-measuring': measuring,
   '014-releases': releases,
+  '015-listing': listing,
 }

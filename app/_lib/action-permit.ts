@@ -22,3 +22,9 @@ export async function permitAdministrator(): Promise<{ db: Kysely<DB>; permit: S
   const permit = permitSite(await getViewer())
   return { db: await database(), permit }
 }
+
+/** For form actions of every member. @throws Problem, which `failedForm` turns into the form's message. */
+export async function permitReader(slug: string): Promise<{ db: Kysely<DB>; permit: CampaignPermit<'read'> }> {
+  const db = await database()
+  return { db, permit: await permitCampaign(db, await getViewer(), slug, 'read') }
+}

@@ -1,12 +1,22 @@
 import Link from 'next/link'
-import { CopyButton, CopyText } from '@/components/table/copy-text'
+import { CopyButton } from '@/components/table/copy-text'
+import {
+  decidedColumn,
+  enteredColumn,
+  figure,
+  FINDING_COLUMNS,
+  none,
+  POSITION_COLUMNS,
+  REDSHIFT_COLUMNS,
+  toldByProbability,
+  WORD_COLUMNS,
+} from '@/components/table/shared-columns'
 import { StampThumbnail } from '@/components/table/stamp-thumbnail'
 import type { TableColumn } from '@/components/table/table-column'
 import type { TableSort } from '@/components/table/table-state'
 import { StatePill } from '@/components/ui/state-pill'
 import { VoteStrip } from '@/components/ui/vote-strip'
 import { probabilityBeside } from '@/lib/science/agreement/weight-words'
-import { formatDeclination, formatRightAscension } from '@/lib/science/sky/coordinates'
 import type { CandidateTableRow } from '@/lib/work/catalogue/candidate-table'
 
 export interface CandidateRow extends CandidateTableRow {
@@ -23,10 +33,6 @@ export const UNGRADED = 'not graded by me'
 
 /** A state filter's word for what the first pass has not sent on to the bench. */
 export const NOT_SENT_ON = 'not sent on'
-
-const none = <span className="text-mute">–</span>
-const figure = (value: number | null | undefined, decimals: number) =>
-  value === null || value === undefined ? none : value.toFixed(decimals)
 
 const NAME: TableColumn<CandidateRow> = {
   id: 'name',
@@ -56,18 +62,26 @@ const STATE = (choices: readonly string[]): TableColumn<CandidateRow> => ({
   id: 'state',
   label: 'State',
   filter: choices,
-  filterSpills: true,
   sortable: true,
   cell: (row) =>
     row.state ? <StatePill state={row.state} /> : <span className="text-note text-mute">after your grade</span>,
 })
 
 const JUDGED: readonly TableColumn<CandidateRow>[] = [
-  { id: 'votes', label: 'Grades', cell: (row) => (row.votes ? <VoteStrip votes={row.votes} dense /> : none) },
+  {
+    id: 'votes',
+    label: 'Grades',
+    title: 'Grades given',
+    filter: 'range',
+    sortable: true,
+    largestFirst: true,
+    cell: (row) => (row.votes ? <VoteStrip votes={row.votes} dense /> : none),
+  },
   {
     id: 'mean',
     label: 'Mean',
     title: 'Mean grade of the verdict, points',
+    filter: 'range',
     sortable: true,
     largestFirst: true,
     numeric: true,
@@ -77,6 +91,7 @@ const JUDGED: readonly TableColumn<CandidateRow>[] = [
     id: 'spread',
     label: 'Spread',
     title: 'Spread of the verdict, points',
+    filter: 'range',
     sortable: true,
     largestFirst: true,
     numeric: true,
@@ -88,6 +103,7 @@ const PROBABILITY: TableColumn<CandidateRow> = {
   id: 'probability',
   label: 'Lens p',
   title: 'Lens probability of the verdict',
+  filter: 'range',
   sortable: true,
   largestFirst: true,
   numeric: true,
@@ -99,63 +115,18 @@ const SCORE: TableColumn<CandidateRow> = {
   id: 'score',
   label: 'Score',
   title: 'Score of the machine search',
+  filter: 'range',
   sortable: true,
   largestFirst: true,
   numeric: true,
   cell: (row) => figure(row.score, 3),
 }
 
-const POSITION: readonly TableColumn<CandidateRow>[] = [
-  {
-    id: 'ra',
-    label: 'RA',
-    title: 'Right ascension, ICRS',
-    sortable: true,
-    numeric: true,
-    cell: (row) =>
-      row.raDeg === null ? none : <CopyText text={formatRightAscension(row.raDeg)} what="right ascension" />,
-  },
-  {
-    id: 'dec',
-    label: 'Dec',
-    title: 'Declination, ICRS',
-    sortable: true,
-    numeric: true,
-    cell: (row) => (row.decDeg === null ? none : <CopyText text={formatDeclination(row.decDeg)} what="declination" />),
-  },
-  {
-    id: 'radeg',
-    label: 'RA, deg',
-    title: 'Right ascension, degrees',
-    numeric: true,
-    cell: (row) =>
-      row.raDeg === null ? (
-        none
-      ) : (
-        <CopyText text={String(row.raDeg)} what="right ascension in degrees">
-          {row.raDeg.toFixed(5)}
-        </CopyText>
-      ),
-  },
-  {
-    id: 'decdeg',
-    label: 'Dec, deg',
-    title: 'Declination, degrees',
-    numeric: true,
-    cell: (row) =>
-      row.decDeg === null ? (
-        none
-      ) : (
-        <CopyText text={String(row.decDeg)} what="declination in degrees">
-          {row.decDeg.toFixed(5).replace('-', '−')}
-        </CopyText>
-      ),
-  },
-]
-
 const DESIGNATION: TableColumn<CandidateRow> = {
   id: 'designation',
   label: 'Designation',
+  filter: 'text',
+  sortable: true,
   hidden: true,
   cell: (row) =>
     row.designation ? (
@@ -167,23 +138,48 @@ const DESIGNATION: TableColumn<CandidateRow> = {
     ),
 }
 
-const STATES = ['open', 'split', 'confirmed', 'set aside'] as const
-
-/** For each role a list of its own, made once: the score and what is calibration are for leads. */
-export const CANDIDATE_COLUMNS: Record<ColumnsFor, readonly TableColumn<CandidateRow>[]> = {
-  lead: [NAME, STATE([...STATES, NOT_SENT_ON]), ...JUDGED, PROBABILITY, SCORE, ...POSITION, DESIGNATION],
-  grader: [NAME, STATE([UNGRADED, ...STATES]), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
-  viewer: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, ...POSITION, DESIGNATION],
+const CALIBRATION: TableColumn<CandidateRow> = {
+  id: 'calibration',
+  label: 'Calibration',
+  filter: ['candidate', 'calibration'],
+  filterTitle: 'Candidates or calibration',
+  filterOnly: true,
+  cell: () => null,
 }
 
-/** The same where the rule goes by reliability: the lens probability in the place of the spread. */
-const told = (columns: readonly TableColumn<CandidateRow>[]) =>
-  columns.map((column) => {
-    if (column.id === 'probability') return { ...column, hidden: false }
-    return column.id === 'spread' ? { ...column, hidden: true } : column
-  })
+const STATES = ['open', 'split', 'confirmed', 'set aside'] as const
+const POSITION = POSITION_COLUMNS as readonly TableColumn<CandidateRow>[]
+const MADE_OF: readonly TableColumn<CandidateRow>[] = [
+  DESIGNATION,
+  ...WORD_COLUMNS,
+  ...FINDING_COLUMNS,
+  decidedColumn({ hidden: true }),
+  enteredColumn({ hidden: true }),
+]
+
+/**
+ * For each role a list of its own, made once: the score and what is calibration are for leads. Graders find redshifts in the catalogue:
+ * in this list what has none would stand out, and calibration stamps have none.
+ */
+export const CANDIDATE_COLUMNS: Record<ColumnsFor, readonly TableColumn<CandidateRow>[]> = {
+  lead: [
+    NAME,
+    STATE([...STATES, NOT_SENT_ON]),
+    ...JUDGED,
+    PROBABILITY,
+    SCORE,
+    ...POSITION,
+    ...MADE_OF,
+    ...REDSHIFT_COLUMNS,
+    CALIBRATION,
+  ],
+  grader: [NAME, STATE([UNGRADED, ...STATES]), ...JUDGED, PROBABILITY, ...POSITION, ...MADE_OF],
+  viewer: [NAME, STATE(STATES), ...JUDGED, PROBABILITY, ...POSITION, ...MADE_OF, ...REDSHIFT_COLUMNS],
+}
+
+/** The same where the rule goes by reliability. */
 export const COLUMNS_BY_RELIABILITY: typeof CANDIDATE_COLUMNS = {
-  lead: told(CANDIDATE_COLUMNS.lead),
-  grader: told(CANDIDATE_COLUMNS.grader),
-  viewer: told(CANDIDATE_COLUMNS.viewer),
+  lead: toldByProbability(CANDIDATE_COLUMNS.lead),
+  grader: toldByProbability(CANDIDATE_COLUMNS.grader),
+  viewer: toldByProbability(CANDIDATE_COLUMNS.viewer),
 }

@@ -2,6 +2,8 @@
 
 import { useMemo } from 'react'
 import { DataTable } from '@/components/table/data-table'
+import type { ViewsOfTable } from '@/components/table/saved-views'
+import { positionOf } from '@/components/table/shared-columns'
 import { ButtonLink } from '@/components/ui/button'
 import { EmptyState, VisualGradeCaution } from '@/components/ui/notice'
 import type { CandidateTable } from '@/lib/work/catalogue/candidate-table'
@@ -11,10 +13,11 @@ interface CandidatesScreenProps {
   slug: string
   role: ColumnsFor
   table: CandidateTable
+  views?: ViewsOfTable
 }
 
 /** Every candidate of the campaign, sorted, narrowed and paged by the server. */
-export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
+export function CandidatesScreen({ slug, role, table, views }: CandidatesScreenProps) {
   const { rows, count, all } = table
   const linked = useMemo(
     () => rows.map((row) => ({ ...row, href: `/campaigns/${slug}/candidates/${row.id}` })),
@@ -22,7 +25,8 @@ export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
   )
   if (all === 0) {
     return (
-      <div className="px-4 py-6 md:px-6">
+      <div className="flex flex-col gap-4 px-4 py-6 md:px-6">
+        <h1 className="text-title font-semibold">Candidates</h1>
         <EmptyState title="No candidates yet">
           {role === 'lead' ? (
             <>
@@ -52,7 +56,7 @@ export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
         ) : null}
         <VisualGradeCaution />
       </header>
-      <div className="flex h-[76dvh] min-h-0 flex-col md:h-auto md:flex-1">
+      <div className="flex min-h-[76dvh] flex-col md:min-h-0 md:flex-1">
         <DataTable
           label="Candidates"
           noun="candidates"
@@ -60,7 +64,10 @@ export function CandidatesScreen({ slug, role, table }: CandidatesScreenProps) {
           rows={linked}
           rowId={(row) => String(row.id)}
           defaultSort={CANDIDATE_SORT}
-          served={{ count, all }}
+          count={count}
+          all={all}
+          position={positionOf}
+          views={views}
         />
       </div>
     </div>

@@ -1,3 +1,4 @@
+import type { ViewsOfTable } from '@/components/table/saved-views'
 import { ButtonLink } from '@/components/ui/button'
 import { EmptyState, Notice, VisualGradeCaution } from '@/components/ui/notice'
 import type { CatalogueTable as Catalogue } from '@/lib/work/catalogue/catalogue-table'
@@ -11,14 +12,15 @@ interface CatalogueScreenProps {
   classRule: string
   /** Where to go when nothing is confirmed yet. */
   next: { href: string; label: string }
+  views?: ViewsOfTable
 }
 
-export function CatalogueScreen({ slug, catalogue, classRule, next }: CatalogueScreenProps) {
-  const { rows, ownOnly } = catalogue
-  const all = rows.length
+export function CatalogueScreen({ slug, catalogue, classRule, next, views }: CatalogueScreenProps) {
+  const { all, ownOnly } = catalogue
   if (all === 0) {
     return (
-      <div className="px-4 py-6 md:px-6">
+      <div className="flex flex-col gap-4 px-4 py-6 md:px-6">
+        <h1 className="text-title font-semibold">Catalogue</h1>
         <EmptyState title={ownOnly ? 'Nothing that you have graded is confirmed yet' : 'Nothing is confirmed yet'}>
           {ownOnly ? (
             <p>Confirmed candidates that you have not graded are held back, so that nobody’s judgement sways yours.</p>
@@ -45,17 +47,15 @@ export function CatalogueScreen({ slug, catalogue, classRule, next }: CatalogueS
           <VisualGradeCaution />
           <p className="text-note text-mute">Class: {classRule}.</p>
         </div>
-        {catalogue.mayExport ? <Downloads slug={slug} count={rows.length} /> : null}
+        {catalogue.mayExport ? <Downloads slug={slug} count={all} /> : null}
       </header>
       {ownOnly ? <HeldBack slug={slug} /> : null}
       {catalogue.mayExport || ownOnly ? null : (
         <Notice>Files of the catalogue are downloaded by leads and viewers; ask one of them for it.</Notice>
       )}
-      {rows.length > 0 ? (
-        <div className="flex h-[76dvh] min-h-0 flex-col md:h-auto md:flex-1">
-          <CatalogueTable slug={slug} rows={rows} />
-        </div>
-      ) : null}
+      <div className="flex min-h-[76dvh] flex-col md:min-h-0 md:flex-1">
+        <CatalogueTable slug={slug} catalogue={catalogue} views={views} />
+      </div>
     </div>
   )
 }

@@ -2,11 +2,15 @@ import { render, screen, within } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
 import { beforeEach, expect, it, vi } from 'vitest'
 import type { CatalogueTableRow } from '@/lib/work/catalogue/catalogue-table'
+import { catalogueQuery } from './catalogue-query'
+import { CatalogueScreen } from './catalogue-screen'
 import { CatalogueTable } from './catalogue-table'
 
+const router = vi.hoisted(() => ({ push: vi.fn(), replace: vi.fn() }))
 vi.mock('next/navigation', () => ({
-  useRouter: () => ({ replace: vi.fn() }),
+  useRouter: () => router,
   useSearchParams: () => new URLSearchParams(window.location.search),
+  usePathname: () => '/campaigns/north/catalogue',
 }))
 
 const row = (id: number, more: Partial<CatalogueTableRow>): CatalogueTableRow => ({
@@ -22,117 +26,112 @@ const row = (id: number, more: Partial<CatalogueTableRow>): CatalogueTableRow =>
   votes: { A: 4, B: 0, C: 0, N: 0, U: 0 },
   decidedBy: 'verdict',
   tags: '',
+  remarks: '',
   lensRedshift: null,
   sourceRedshift: null,
   enteredAt: '2026-03-01T00:00:00.000Z',
   thumbnail: null,
+  known: [],
+  einstein: null,
   ...more,
 })
 
-const ROWS = [
-  row(1, { mean: 2, gradeClass: 'B' }),
-  row(2, { mean: 3 }),
-  row(3, { mean: null, gradeClass: null, decidedBy: 'ruling' }),
-  row(4, { mean: 2.6, tags: 'arc, ring' }),
-]
+const ROWS = [row(2, { mean: 3 }), row(4, { mean: 2.6 }), row(1, { mean: 2, gradeClass: 'B' })]
+const PATH = '/campaigns/north/catalogue'
+const STILL = { scroll: false }
 
-beforeEach(() => window.history.replaceState(null, '', '/campaigns/north/catalogue'))
-
-const ids = () =>
-  screen
-    .queryAllByRole('rowheader')
-    .map((cell) => Number(within(cell).getByRole('link').getAttribute('href')?.split('/').at(-1)))
-const show = (rows = ROWS) => render(<CatalogueTable slug="north" rows={rows} />)
-
-it('comes with the surest first and what has no mean last', () => {
-  show()
-  expect(ids()).toEqual([2, 4, 1, 3])
-  expect(screen.getByRole('columnheader', { name: 'Mean' })).toHaveAttribute('aria-sort', 'descending')
-  expect(window.location.search).toBe('')
+beforeEach(() => {
+  router.push.mockReset()
+  router.replace.mockReset()
+  window.history.replaceState(null, '', PATH)
 })
 
-it('sorts by a head that is a button, both ways, and writes it to the address', async () => {
+const show = (rows = ROWS, count = rows.length, byReliability = false) =>
+  render(<CatalogueTable slug="north" catalogue={{ rows, count, all: 230, byReliability }} />)
+const heads = () => screen.getAllByRole('columnheader').map((head) => head.textContent)
+
+it('asks for the surest first as it comes, and by another column as its head is pressed, as a step of the history', async () => {
   const user = userEvent.setup()
   show()
+  expect(screen.getByRole('columnheader', { name: 'Mean' })).toHaveAttribute('aria-sort', 'descending')
+  expect(catalogueQuery(new URLSearchParams(), 100)).toMatchObject({ order: 'mean', descending: true, page: 0 })
   const button = within(screen.getByRole('columnheader', { name: 'Designation' })).getByRole('button')
   button.focus()
   await user.keyboard('{Enter}')
-  expect(ids()).toEqual([1, 2, 3, 4])
-  expect(window.location.search).toBe('?sort=designation')
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?sort=designation`, STILL)
   await user.click(button)
-  expect(ids()).toEqual([4, 3, 2, 1])
-  expect(window.location.search).toBe('?sort=-designation')
-  expect(screen.getByRole('columnheader', { name: 'Mean' })).toHaveAttribute('aria-sort', 'none')
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?sort=-designation`, STILL)
 })
 
-it('narrows a column by typing and another by choosing, says how many are left, and clears both', async () => {
+it('has a filter for every column, shown or not, and writes what is typed after a pause as one step of the history', async () => {
   const user = userEvent.setup()
   show()
   await user.click(screen.getByRole('button', { name: 'Filters' }))
-  await user.type(screen.getByRole('textbox', { name: 'Filter by mean grade, points' }), '>2')
-  await vi.waitFor(() => expect(ids()).toEqual([2, 4]))
-  await user.click(screen.getByRole('button', { name: 'A' }))
-  expect(window.location.search).toBe('?class=A&mean=%3E2')
-  expect(screen.getByRole('status')).toHaveTextContent('2 of 4 entries')
+  await user.type(screen.getByRole('textbox', { name: 'Redshift of the lens' }), '0.2..0.5')
+  await vi.waitFor(() => expect(router.push).toHaveBeenCalledWith(`${PATH}?zlens=0.2..0.5`, STILL))
+  await user.type(screen.getByRole('textbox', { name: 'Redshift of the lens' }), '5')
+  await vi.waitFor(() => expect(router.replace).toHaveBeenCalledWith(`${PATH}?zlens=0.2..0.55`, STILL))
+  await user.click(screen.getByRole('button', { name: 'B' }))
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?class=B&zlens=0.2..0.55`, STILL)
   await user.click(screen.getByRole('button', { name: 'Clear filters' }))
-  expect(ids()).toEqual([2, 4, 1, 3])
-  expect(window.location.search).toBe('')
+  expect(router.push).toHaveBeenLastCalledWith(PATH, STILL)
 })
 
-it('marks a range that cannot be read and lets every row pass', async () => {
+it('keeps what cannot be read, says beside the field what is wrong, and asks the server for nothing by it', async () => {
   const user = userEvent.setup()
+  window.history.replaceState(null, '', `${PATH}?mean=about+2&near=150&entered=2026-13`)
   show()
-  await user.click(screen.getByRole('button', { name: 'Filters' }))
-  const field = screen.getByRole('textbox', { name: 'Filter by mean grade, points' })
-  await user.type(field, 'about 2')
+  await user.click(screen.getByRole('button', { name: 'Filters (3)' }))
+  const field = screen.getByRole('textbox', { name: 'Mean grade, points' })
+  expect(field).toHaveValue('about 2')
   expect(field).toBeInvalid()
-  await vi.waitFor(() => expect(window.location.search).toContain('mean='))
-  expect(ids()).toHaveLength(4)
+  expect(field).toHaveAccessibleDescription(/“about 2” is no range of numbers/)
+  expect(screen.getByRole('textbox', { name: /Round the position/ })).toHaveAccessibleDescription(
+    /“150” is no position/,
+  )
+  expect(screen.getByRole('textbox', { name: /Entered/ })).toHaveAccessibleDescription(/no day or range of days/)
+  expect(catalogueQuery(new URLSearchParams(window.location.search), 100).filter).toEqual({ columns: [] })
 })
 
-it('shows and hides columns as chosen, and writes the choice to the address', async () => {
+it('says which filters are set while their fields are shut, and takes off each by itself', async () => {
   const user = userEvent.setup()
+  window.history.replaceState(null, '', `${PATH}?class=A,B&mean=%3E2`)
+  show(ROWS, 3)
+  expect(screen.getByRole('status')).toHaveTextContent('3 of 230 entries')
+  await user.click(screen.getByRole('button', { name: 'Take off the filter Class A or B' }))
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?mean=%3E2`, STILL)
+})
+
+it('shows, hides and moves columns as chosen, and writes their order to the address', async () => {
+  const user = userEvent.setup()
+  window.history.replaceState(null, '', `${PATH}?columns=mean,class`)
   show()
-  expect(screen.queryByRole('columnheader', { name: 'Tags' })).toBeNull()
+  expect(heads()).toEqual(['Designation', 'Mean', 'Class'])
   await user.click(screen.getByRole('button', { name: 'Columns' }))
   await user.click(screen.getByRole('checkbox', { name: 'Tags' }))
-  await user.click(screen.getByRole('checkbox', { name: 'Grades' }))
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?columns=mean,class,tags`, STILL)
+  await user.click(screen.getByRole('button', { name: /Move Tags before/ }))
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?columns=mean,tags,class`, STILL)
+  const first = screen.getByRole('button', { name: /Move Mean grade, points before/ })
+  expect(first).toHaveAttribute('aria-disabled', 'true')
   // The rest of the page is out of reach for readers while the choice is open.
   await user.keyboard('{Escape}')
-  expect(screen.getByRole('columnheader', { name: 'Tags' })).toBeInTheDocument()
-  expect(screen.queryByRole('columnheader', { name: 'Grades' })).toBeNull()
-  const shown = new URLSearchParams(window.location.search).get('columns')?.split(',')
-  expect(shown).toContain('tags')
-  expect(shown).not.toContain('votes')
-})
-
-it('shows from a shared link the same rows in the same order and the same columns', () => {
-  window.history.replaceState(null, '', '/campaigns/north/catalogue?sort=-designation&class=A,B&columns=mean,tags')
-  show()
-  expect(ids()).toEqual([4, 2, 1])
-  expect(screen.getAllByRole('columnheader').map((head) => head.textContent)).toEqual(['Designation', 'Mean', 'Tags'])
-  expect(screen.getByRole('button', { name: 'Filters (1)' })).toHaveAttribute('aria-expanded', 'true')
+  expect(heads()).toEqual(['Designation', 'Mean', 'Tags', 'Class'])
 })
 
 it('pages through long catalogues and begins anew when the order changes', async () => {
-  // One column, and few questions by role: jsdom takes its time with long tables.
-  window.history.replaceState(null, '', '/campaigns/north/catalogue?columns=spread')
+  window.history.replaceState(null, '', `${PATH}?columns=spread&page=2`)
   const user = userEvent.setup()
-  const long = Array.from({ length: 230 }, (_, index) => row(index + 1, {}))
-  const { container } = show(long)
-  const rowCount = () => container.querySelectorAll('tbody tr').length
-  expect(rowCount()).toBe(100)
+  show(ROWS, 230)
   await user.click(screen.getByText('Last'))
-  expect(window.location.search).toBe('?columns=spread&page=3')
-  expect(rowCount()).toBe(30)
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?columns=spread&page=3`, STILL)
   await user.click(screen.getByText('Spread'))
-  expect(window.location.search).toBe('?sort=-spread&columns=spread')
-  expect(rowCount()).toBe(100)
+  expect(router.push).toHaveBeenLastCalledWith(`${PATH}?sort=-spread&columns=spread`, STILL)
 })
 
 it('says so when nothing passes the filters', () => {
-  window.history.replaceState(null, '', '/campaigns/north/catalogue?designation=nowhere')
-  show()
+  window.history.replaceState(null, '', `${PATH}?designation=nowhere`)
+  show([], 0)
   expect(screen.getByText(/Nothing passes these filters/)).toBeInTheDocument()
 })
 
@@ -153,15 +152,26 @@ it('copies a designation with one click', async () => {
   expect(screen.getByRole('button', { name: 'designation copied' })).toBeInTheDocument()
 })
 
-it('shows the lens probability in the place of the spread where verdicts are by reliability', () => {
-  show([row(1, { probability: 0.99871 }), row(2, { probability: null })])
-  expect(screen.getByRole('columnheader', { name: 'Lens p' })).toBeVisible()
-  expect(screen.getByText('0.999')).toBeVisible()
-  expect(screen.queryByRole('columnheader', { name: 'Spread' })).toBeNull()
+it.each([
+  [true, 'Lens p', 'Spread'],
+  [false, 'Spread', 'Lens p'],
+])('tells entries by what the rule goes by: by reliability %s', (byReliability, shown, hidden) => {
+  show([row(1, { probability: 0.99871 })], 1, byReliability)
+  expect(screen.getByRole('columnheader', { name: shown })).toBeVisible()
+  expect(screen.queryByRole('columnheader', { name: hidden })).toBeNull()
 })
 
-it('has no column for it where they are by the mean', () => {
-  show()
-  expect(screen.queryByRole('columnheader', { name: 'Lens p' })).toBeNull()
-  expect(screen.getByRole('columnheader', { name: 'Spread' })).toBeVisible()
+it('tells what an entry is known as and how wide its arc was measured, where that is asked for', () => {
+  window.history.replaceState(null, '', `${PATH}?columns=known,einstein`)
+  const known = [{ name: 'RS 1041', list: 'Older rings', separationArcsec: 0.31 }]
+  show([row(1, { known, einstein: { radiusArcsec: 1.234, errorArcsec: 0.05, count: 2 } })])
+  expect(screen.getByText('RS 1041')).toHaveAttribute('title', 'RS 1041, Older rings, 0.31 arcsec away')
+  expect(screen.getByText('1.23 ± 0.05')).toBeVisible()
+})
+
+it('has a heading also while nothing is confirmed', () => {
+  const catalogue = { rows: [], count: 0, all: 0, ownOnly: false, mayExport: true, byReliability: false }
+  const next = { href: '/', label: 'See all candidates' }
+  render(<CatalogueScreen slug="north" catalogue={catalogue} classRule="by the mean" next={next} />)
+  expect(screen.getByRole('heading', { level: 1 })).toBeVisible()
 })

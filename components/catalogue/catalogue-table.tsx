@@ -2,11 +2,20 @@
 
 import { useMemo } from 'react'
 import { DataTable } from '@/components/table/data-table'
-import type { CatalogueTableRow } from '@/lib/work/catalogue/catalogue-table'
+import type { ViewsOfTable } from '@/components/table/saved-views'
+import { positionOf } from '@/components/table/shared-columns'
+import type { CatalogueTable as Catalogue } from '@/lib/work/catalogue/catalogue-table'
 import { CATALOGUE_COLUMNS, CATALOGUE_SORT, COLUMNS_BY_RELIABILITY } from './catalogue-columns'
 
-/** The whole catalogue, sorted and narrowed in the browser. */
-export function CatalogueTable({ slug, rows }: { slug: string; rows: readonly CatalogueTableRow[] }) {
+interface CatalogueTableProps {
+  slug: string
+  catalogue: Pick<Catalogue, 'rows' | 'count' | 'all' | 'byReliability'>
+  views?: ViewsOfTable
+}
+
+/** A page of the catalogue, sorted and narrowed by the server. */
+export function CatalogueTable({ slug, catalogue, views }: CatalogueTableProps) {
+  const { rows, count, all, byReliability } = catalogue
   const linked = useMemo(
     () => rows.map((row) => ({ ...row, href: `/campaigns/${slug}/candidates/${row.id}` })),
     [rows, slug],
@@ -15,10 +24,14 @@ export function CatalogueTable({ slug, rows }: { slug: string; rows: readonly Ca
     <DataTable
       label="Confirmed candidates"
       noun="entries"
-      columns={rows.some(({ probability }) => probability !== null) ? COLUMNS_BY_RELIABILITY : CATALOGUE_COLUMNS}
+      columns={byReliability ? COLUMNS_BY_RELIABILITY : CATALOGUE_COLUMNS}
       rows={linked}
+      count={count}
+      all={all}
       rowId={(row) => String(row.id)}
       defaultSort={CATALOGUE_SORT}
+      position={positionOf}
+      views={views}
     />
   )
 }

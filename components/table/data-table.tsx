@@ -2,13 +2,16 @@
 
 import { useTable, type RowData } from '@tanstack/react-table'
 import { useMemo, useState, type KeyboardEvent, type ReactNode } from 'react'
+import type { SkyPosition } from '@/lib/science/sky/separation'
+import { ActiveFilters } from './active-filters'
 import { ColumnChooser } from './column-chooser'
-import { FilterField } from './filter-field'
+import { FilterPanel } from './filter-panel'
 import { HeadCell, PINNED } from './head-cell'
 import { Pager } from './pager'
+import { SavedViews, type ViewsOfTable } from './saved-views'
 import type { TableColumn } from './table-column'
 import { columnDefs, features } from './table-model'
-import { PAGE_SIZE, type TableShape, type TableSort } from './table-state'
+import { PAGE_SIZE, readTableState, writeTableState, type TableShape, type TableSort } from './table-state'
 import { ToolButton } from './tool-button'
 import { useTableState } from './use-table-state'
 
@@ -18,11 +21,16 @@ interface DataTableProps<Row> {
   /** What several rows are called in counts. */
   noun: string
   columns: readonly TableColumn<Row>[]
+  /** One page of `count`, of `all` without a filter: the server sorts, filters and pages. */
   rows: readonly Row[]
+  count: number
+  all: number
   rowId: (row: Row) => string
   defaultSort: TableSort
-  /** Given where the server sorts, filters and pages: `rows` are then one page of `count`, of `all` without a filter. */
-  served?: { count: number; all: number }
+  /** Where the row lies; without, there is no region to choose. Keep it at module level. */
+  position?: (row: Row) => SkyPosition | null
+  /** Without, none can be saved. */
+  views?: ViewsOfTable
   /** Beside the tools at the top. */
   children?: ReactNode
 }
@@ -39,73 +47,71 @@ function moveBetweenRows(event: KeyboardEvent<HTMLTableSectionElement>) {
 }
 
 /** `by mean grade, falling`. An order that no column stands for is that of arrival. */
-function describeOrder<Row>(columns: readonly TableColumn<Row>[], sort: readonly TableSort[]): string {
-  const parts = sort.map(({ id, descending }) => {
-    const column = columns.find((one) => one.id === id)
-    if (!column) return 'in the order of arrival'
-    return `by ${(column.title ?? column.label).split(',')[0].toLowerCase()}, ${descending ? 'falling' : 'rising'}`
-  })
-  return parts.join(', then ')
+function describeOrder<Row>(columns: readonly TableColumn<Row>[], [sort]: readonly TableSort[]): string {
+  const column = columns.find((one) => one.id === sort.id)
+  if (!column) return 'in the order of arrival'
+  return `by ${(column.title ?? column.label).split(',')[0].toLowerCase()}, ${sort.descending ? 'falling' : 'rising'}`
 }
 
 /**
- * A table for people who read tables all day: 32-px rows, a head that stays, sorting by heads that are buttons, a filter below
- * each head, a choice of columns, pages of 100 rows, and all of that in the address.
+ * A table for people who read tables all day: 32-px rows, a head that stays, sorting by heads that are buttons, a filter for every
+ * column, a choice and order of columns, pages of 100 rows, and all of that in the address.
  */
 export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
-  const { label, noun, columns, rows, rowId, defaultSort, served, children } = props
-  const shape = useMemo<TableShape>(() => ({ columns, defaultSort }), [columns, defaultSort])
-  const { state, update, isPending } = useTableState(shape, served ? 'server' : 'browser')
+  const { label, noun, columns, rows, count, all, rowId, defaultSort, position, views, children } = props
+  const hasRegion = position !== undefined
+  const shape = useMemo<TableShape>(() => ({ columns, defaultSort, hasRegion }), [columns, defaultSort, hasRegion])
+  const { state, update, isPending } = useTableState(shape)
   const defs = useMemo(() => columnDefs(columns), [columns])
   const filterCount = Object.keys(state.filters).length
-  const [filtersWanted, setFiltersWanted] = useState<boolean | null>(null)
-  const filtersOpen = filtersWanted ?? filterCount > 0
+  const [filtersOpen, setFiltersOpen] = useState(false)
 
   const sorting = state.sort.map(({ id, descending }) => ({ id, desc: descending }))
-  const columnFilters = Object.entries(state.filters).map(([id, value]) => ({ id, value }))
+  const pinned = columns.flatMap((column) => (column.pinned ? [column.id] : []))
   const columnVisibility = Object.fromEntries(
-    columns.map(({ id, pinned }) => [id, Boolean(pinned) || state.columns.includes(id)]),
+    columns.map(({ id }) => [id, pinned.includes(id) || state.columns.includes(id)]),
   )
   const table = useTable({
     features,
     columns: defs,
     data: rows,
     getRowId: rowId,
-    state: { sorting, columnFilters, columnVisibility, pagination: { pageIndex: state.page, pageSize: PAGE_SIZE } },
+    state: { sorting, columnVisibility, columnOrder: [...pinned, ...state.columns] },
     onSortingChange: (change) => {
       const next = typeof change === 'function' ? change(sorting) : change
       update({ sort: next.map(({ id, desc }) => ({ id, descending: desc })) })
     },
     enableSortingRemoval: false,
-    enableMultiSort: !served,
-    autoResetPageIndex: false,
-    ...(served
-      ? { manualSorting: true, manualFiltering: true, manualPagination: true, rowCount: served.count }
-      : { manualSorting: false }),
+    enableMultiSort: false,
+    manualSorting: true,
   })
 
   const byId = new Map(columns.map((column) => [column.id, column]))
   const shown = table.getVisibleLeafColumns().flatMap(({ id }) => byId.get(id) ?? [])
-  const count = served ? served.count : table.getFilteredRowModel().rows.length
-  const all = served ? served.all : rows.length
   const heads = table.getHeaderGroups()[0]?.headers ?? []
   const setFilter = (id: string, text: string) => {
     const { [id]: _old, ...others } = state.filters
-    update({ filters: text ? { ...others, [id]: text } : others })
+    update({ filters: text ? { ...others, [id]: text } : others }, id)
   }
+  const positions = useMemo(() => (position ? rows.flatMap((row) => position(row) ?? []) : null), [position, rows])
+  const found = `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun}`
 
   return (
     <div className="flex min-h-0 flex-1 flex-col gap-2">
-      <div className="flex flex-wrap items-center gap-x-3 gap-y-2">
+      <div className="flex flex-wrap items-center gap-x-3 gap-y-2 max-md:[&_button]:min-h-11">
         <p role="status" className="mr-auto text-small text-mute first-letter:uppercase">
-          {filterCount > 0 && !isPending
-            ? `${count.toLocaleString('en')} of ${all.toLocaleString('en')} ${noun}, `
-            : ''}
+          {filterCount > 0 && !isPending ? `${found}, ` : ''}
           {describeOrder(columns, state.sort)}
           {isPending ? ' · reading…' : ''}
         </p>
-        {filterCount > 0 ? <ToolButton onClick={() => update({ filters: {} })}>Clear filters</ToolButton> : null}
-        <ToolButton aria-expanded={filtersOpen} onClick={() => setFiltersWanted(!filtersOpen)}>
+        {views ? (
+          <SavedViews
+            {...views}
+            query={writeTableState(shape, { ...state, page: 0 })}
+            normalised={(query) => writeTableState(shape, { ...readTableState(shape, query), page: 0 })}
+          />
+        ) : null}
+        <ToolButton aria-expanded={filtersOpen} onClick={() => setFiltersOpen(!filtersOpen)}>
           Filters{filterCount > 0 ? ` (${filterCount})` : ''}
         </ToolButton>
         <ColumnChooser
@@ -116,12 +122,28 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
         />
         {children}
       </div>
+      <ActiveFilters
+        columns={columns}
+        filters={state.filters}
+        onTakeOff={(id) => setFilter(id, '')}
+        onClear={() => update({ filters: {} })}
+      />
+      {filtersOpen ? (
+        <FilterPanel
+          columns={columns}
+          filters={state.filters}
+          onChange={setFilter}
+          positions={positions}
+          found={found}
+          onClose={() => setFiltersOpen(false)}
+        />
+      ) : null}
       <div
         role="region"
         aria-label={label}
         aria-busy={isPending}
         tabIndex={0}
-        className="min-h-40 flex-1 overflow-auto rounded-tray border border-line"
+        className="relative min-h-40 flex-1 overflow-auto rounded-tray border border-line"
       >
         <table className="w-full border-separate border-spacing-0 text-small">
           <thead className="sticky top-0 z-20 bg-page">
@@ -131,24 +153,10 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
                 return column ? <HeadCell key={head.id} column={column} head={head.column} /> : null
               })}
             </tr>
-            {filtersOpen ? (
-              <tr>
-                {shown.map((column) => (
-                  <td
-                    key={column.id}
-                    className={`border-b border-line bg-page px-2 pb-1.5 ${column.pinned ? PINNED : ''}`}
-                  >
-                    {column.filter ? (
-                      <FilterField column={column} value={state.filters[column.id] ?? ''} onChange={setFilter} />
-                    ) : null}
-                  </td>
-                ))}
-              </tr>
-            ) : null}
           </thead>
           <tbody onKeyDown={moveBetweenRows} className={isPending ? 'opacity-60' : ''}>
-            {table.getRowModel().rows.map((row) => (
-              <tr key={row.id} className="group">
+            {rows.map((row) => (
+              <tr key={rowId(row)} className="group">
                 {shown.map((column) => {
                   const Cell = column.pinned ? 'th' : 'td'
                   return (
@@ -157,7 +165,7 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
                       scope={column.pinned ? 'row' : undefined}
                       className={`h-row whitespace-nowrap border-b border-line bg-page px-2 text-left font-normal group-focus-within:bg-raise group-hover:bg-raise ${column.numeric ? 'figures text-right text-note' : ''} ${column.pinned ? PINNED : ''}`}
                     >
-                      {column.cell(row.original)}
+                      {column.cell(row)}
                     </Cell>
                   )
                 })}

@@ -1,15 +1,23 @@
 'use client'
 
-import { useEffect, useState } from 'react'
-import { parseNumberRange } from './number-range'
-import type { TableColumn } from './table-column'
+import { useEffect, useId, useState, type ReactNode } from 'react'
+import { readFilter } from './read-filter'
+import type { ColumnFilterKind, TableColumn } from './table-column'
 import { chosenOf } from './table-state'
 
 /** Typing is over when nothing was typed for this long. */
-const PAUSE_MS = 250
+const PAUSE_MS = 300
 
 const BOX =
-  'h-7 w-full min-w-12 rounded-key border border-edge/50 bg-well px-1.5 text-note font-normal text-text placeholder:text-mute aria-invalid:border-alarm'
+  'h-8 w-full min-w-0 rounded-key border border-edge/50 bg-well px-2 text-small text-text placeholder:text-mute aria-invalid:border-alarm max-md:h-11 max-md:text-body'
+
+const EXAMPLE: Record<Exclude<ColumnFilterKind, readonly string[]>, string> = {
+  text: 'contains',
+  range: '>= 2, 1..3',
+  date: '2026-11',
+  ra: '150..151',
+  dec: '-2..2',
+}
 
 interface FilterFieldProps<Row> {
   column: TableColumn<Row>
@@ -17,51 +25,65 @@ interface FilterFieldProps<Row> {
   onChange: (id: string, text: string) => void
 }
 
-/** What narrows one column, below its head. */
+/** What narrows one column. */
 export function FilterField<Row>({ column, value, onChange }: FilterFieldProps<Row>) {
-  const name = `Filter by ${(column.title ?? column.label).toLowerCase()}`
-  if (typeof column.filter === 'object') {
+  const { id, filter } = column
+  const title = column.filterTitle ?? column.title ?? column.label
+  if (filter === undefined) return null
+  if (typeof filter === 'object') {
     const chosen = chosenOf(value)
     const toggle = (choice: string) => {
-      const next = column.filter as readonly string[]
-      const wanted = next.filter((one) => (one === choice ? !chosen.includes(one) : chosen.includes(one)))
-      onChange(column.id, wanted.join(','))
+      const wanted = filter.filter((one) => (one === choice ? !chosen.includes(one) : chosen.includes(one)))
+      onChange(id, wanted.join(','))
     }
     return (
-      // Above the next cells, below the pinned column.
-      <span role="group" aria-label={name} className={`relative z-1 flex gap-1 ${column.filterSpills ? 'w-0' : ''}`}>
-        {column.filter.map((choice) => (
-          <button
-            key={choice}
-            type="button"
-            aria-pressed={chosen.includes(choice)}
-            onClick={() => toggle(choice)}
-            className="h-7 min-w-6 shrink-0 whitespace-nowrap rounded-key border border-edge/50 px-1.5 text-note text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text"
-          >
-            {choice}
-          </button>
-        ))}
-      </span>
+      <fieldset className="flex min-w-0 flex-col gap-0.5">
+        <legend className="pb-0.5 text-note text-mute">{title}</legend>
+        <div className="flex flex-wrap gap-1">
+          {filter.map((choice) => (
+            <button
+              key={choice}
+              type="button"
+              aria-pressed={chosen.includes(choice)}
+              onClick={() => toggle(choice)}
+              className="h-8 min-w-8 shrink-0 whitespace-nowrap rounded-key border border-edge/50 px-2 text-note text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text max-md:h-11 max-md:min-w-11 max-md:px-3 max-md:text-small"
+            >
+              {choice}
+            </button>
+          ))}
+        </div>
+      </fieldset>
     )
   }
+  const read = readFilter(filter, value)
   return (
-    <TypedFilter
-      name={name}
-      range={column.filter === 'range'}
+    <TypedField
+      title={title}
+      example={EXAMPLE[filter]}
+      figures={filter !== 'text'}
       value={value}
-      onChange={(text) => onChange(column.id, text)}
+      problemOf={(text) => {
+        const now = text === value ? read : readFilter(filter, text)
+        return now && 'problem' in now ? now.problem : undefined
+      }}
+      onChange={(text) => onChange(id, text)}
     />
   )
 }
 
-interface TypedFilterProps {
-  name: string
-  range: boolean
+interface TypedFieldProps {
+  title: string
+  example: string
+  figures?: boolean
   value: string
+  problemOf: (text: string) => string | undefined
   onChange: (text: string) => void
+  hint?: ReactNode
 }
 
-function TypedFilter({ name, range, value, onChange }: TypedFilterProps) {
+/** A text field that tells what was typed after a pause, and at once when it is left or Enter is pressed. */
+export function TypedField({ title, example, figures = false, value, problemOf, onChange, hint }: TypedFieldProps) {
+  const id = useId()
   const [text, setText] = useState(value)
   const [taken, setTaken] = useState(value)
   // Cleared or changed from outside.
@@ -77,17 +99,40 @@ function TypedFilter({ name, range, value, onChange }: TypedFilterProps) {
     }, PAUSE_MS)
     return () => clearTimeout(timer)
   }, [text, taken, onChange])
-  const unclear = range && text.trim() !== '' && parseNumberRange(text) === null
+  const settle = () => {
+    if (text === taken) return
+    setTaken(text)
+    onChange(text)
+  }
+  // While somebody is still typing half a range is no fault yet.
+  const problem = text === taken ? problemOf(text) : undefined
   return (
-    <input
-      type="text"
-      aria-label={name}
-      aria-invalid={unclear || undefined}
-      title={range ? 'A number, or a range such as 2..3, >2 or <=3' : undefined}
-      placeholder={range ? '2..3' : 'contains'}
-      value={text}
-      onChange={(event) => setText(event.target.value)}
-      className={`${BOX} ${range ? 'figures text-right' : ''}`}
-    />
+    <div className="flex min-w-0 flex-col gap-0.5">
+      <label htmlFor={id} className="truncate text-note text-mute" title={title}>
+        {title}
+      </label>
+      <input
+        id={id}
+        type="text"
+        inputMode="text"
+        autoComplete="off"
+        spellCheck={false}
+        aria-invalid={problem ? true : undefined}
+        aria-describedby={problem ? `${id}-problem` : undefined}
+        placeholder={example}
+        value={text}
+        onChange={(event) => setText(event.target.value)}
+        onBlur={settle}
+        onKeyDown={(event) => event.key === 'Enter' && settle()}
+        className={`${BOX} ${figures ? 'figures' : ''}`}
+      />
+      {problem ? (
+        <p id={`${id}-problem`} role="alert" className="text-note text-alarm">
+          {problem}
+        </p>
+      ) : (
+        hint
+      )}
+    </div>
   )
 }

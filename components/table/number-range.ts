@@ -6,20 +6,21 @@ export interface NumberRange {
   below?: boolean
 }
 
-const NUMBER = String.raw`[+-]?(?:\d+(?:\.\d*)?|\.\d+)`
-const BETWEEN = new RegExp(`^(${NUMBER})?\\s*(?:\\.\\.|…|to)\\s*(${NUMBER})?$`)
-const BEYOND = new RegExp(`^(>=|<=|≥|≤|>|<)\\s*(${NUMBER})$`)
-const ALONE = new RegExp(`^${NUMBER}$`)
+const NUMBER = String.raw`[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:e[+-]?\d{1,3})?`
+const BETWEEN = new RegExp(`^(${NUMBER})?\\s*(?:\\.\\.|…|to)\\s*(${NUMBER})?$`, 'i')
+const BEYOND = new RegExp(`^(>=|<=|≥|≤|>|<)\\s*(${NUMBER})$`, 'i')
+const ALONE = new RegExp(`^${NUMBER}$`, 'i')
 
 /**
- * A range as people type it: `2..3`, `2..`, `..3`, `2 to 3`, `>2`, `≥ 2`, `<=3`. A number alone stands for the values that
- * are written like it: `2.5` is 2.45 to 2.55, `4` is 3.5 to 4.5.
- * @returns null for anything else.
+ * A range as people type it: `2..3`, `2..`, `..3`, `2 to 3`, `>2`, `≥ 2`, `<=3`, `< 1e-3`. A number alone stands for the values
+ * that are written like it: `2.5` is 2.45 to 2.55, `4` is 3.5 to 4.5.
+ * @returns null for anything else. A range from a larger number to a smaller one is given as written, and holds nothing.
  */
 export function parseNumberRange(text: string): NumberRange | null {
   const plain = text.trim().replaceAll('−', '-')
   if (ALONE.test(plain)) {
-    const half = 0.5 * 10 ** -(plain.split('.')[1]?.length ?? 0)
+    const [digits, exponent = '0'] = plain.toLowerCase().split('e')
+    const half = 0.5 * 10 ** (Number(exponent) - (digits.split('.')[1]?.length ?? 0))
     return { least: Number(plain) - half, most: Number(plain) + half, below: true }
   }
   const beyond = BEYOND.exec(plain)
@@ -33,9 +34,4 @@ export function parseNumberRange(text: string): NumberRange | null {
   const between = BETWEEN.exec(plain)
   if (!between || (between[1] === undefined && between[2] === undefined)) return null
   return { least: Number(between[1] ?? -Infinity), most: Number(between[2] ?? Infinity) }
-}
-
-export function isInRange(range: NumberRange, value: number): boolean {
-  const fromBelow = range.above ? value > range.least : value >= range.least
-  return fromBelow && (range.below ? value < range.most : value <= range.most)
 }

@@ -8,8 +8,10 @@ const shape: TableShape = {
     { id: 'mean', filter: 'range', sortable: true },
     { id: 'votes' },
     { id: 'tags', filter: 'text', hidden: true },
+    { id: 'calibration', filter: ['yes'], filterOnly: true },
   ],
   defaultSort: { id: 'mean', descending: true },
+  hasRegion: true,
 }
 const plain = { sort: [{ id: 'mean', descending: true }], filters: {}, columns: ['class', 'mean', 'votes'], page: 0 }
 
@@ -25,8 +27,8 @@ describe('the state of a table in its address', () => {
         { id: 'class', descending: false },
         { id: 'mean', descending: true },
       ],
-      filters: { designation: 'J00 & +1=2,', class: 'A,B', mean: '>2.2' },
-      columns: ['mean', 'tags'],
+      filters: { designation: 'J00 & +1=2,', class: 'A,B', mean: '>2.2', near: '10:00:24 +2:12', within: '30"' },
+      columns: ['tags', 'mean'],
       page: 4,
     }
     expect(readTableState(shape, writeTableState(shape, state))).toEqual(state)
@@ -35,6 +37,15 @@ describe('the state of a table in its address', () => {
   it('can be read by people', () => {
     const state = { ...plain, filters: { mean: '2..3', class: 'A,B' }, page: 1 }
     expect(writeTableState(shape, state)).toBe('class=A,B&mean=2..3&page=2')
+  })
+
+  it('keeps the columns in the order of the address, each once, and shows none that is only a filter', () => {
+    expect(readTableState(shape, 'columns=votes,class,votes,calibration,nothing').columns).toEqual(['votes', 'class'])
+  })
+
+  it('knows no region where rows have no place', () => {
+    const { hasRegion: _hasRegion, ...placeless } = shape
+    expect(readTableState(placeless, 'near=150+2&within=1')).toEqual(plain)
   })
 
   it('can hide every column but the pinned one', () => {

@@ -1,10 +1,12 @@
+import { REGION_FIELDS } from './sky-region'
 import type { ColumnFilterKind } from './table-column'
 
 /**
  * What a person has made of a table, and how it stands in the address, so that a shared link shows the same table:
  *
- *     ?sort=-mean,name   by falling mean, then by name        ?mean=2..3&class=A,B   narrowed by columns
- *     ?columns=ra,mean   these columns beside the pinned one   ?page=2
+ *     ?sort=-mean        by falling mean                       ?mean=2..3&class=A,B   narrowed by columns
+ *     ?columns=ra,mean   these columns, in this order          ?near=150.1+2.2&within=30+arcsec   in a cone
+ *     ?page=2
  *
  * What is as the table comes is left out. What does not fit the table is passed over, never an error: links grow old.
  */
@@ -12,7 +14,7 @@ export interface TableState {
   sort: TableSort[]
   /** By column, as typed. */
   filters: Readonly<Record<string, string>>
-  /** Ids of the columns shown beside the pinned ones, in the order of the table. */
+  /** Ids of the columns shown beside the pinned ones, in their order. */
   columns: string[]
   /** from 0 */
   page: number
@@ -32,16 +34,25 @@ export interface ShapeColumn {
   filter?: ColumnFilterKind
   sortable?: boolean
   hidden?: boolean
+  filterOnly?: boolean
   pinned?: boolean
 }
 
 export interface TableShape {
   columns: readonly ShapeColumn[]
   defaultSort: TableSort
+  /** Rows have a place on the sky. */
+  hasRegion?: boolean
+}
+
+function choosable(shape: TableShape): ShapeColumn[] {
+  return shape.columns.filter(({ pinned, filterOnly }) => !pinned && !filterOnly)
 }
 
 export function shownByDefault(shape: TableShape): string[] {
-  return shape.columns.filter((column) => !column.pinned && !column.hidden).map((column) => column.id)
+  return choosable(shape)
+    .filter((column) => !column.hidden)
+    .map((column) => column.id)
 }
 
 export function readTableState(shape: TableShape, search: string | URLSearchParams): TableState {
@@ -56,10 +67,13 @@ export function readTableState(shape: TableShape, search: string | URLSearchPara
     const text = query.get(id)
     if (filter && text?.trim()) filters[id] = text
   }
+  for (const id of REGION_FIELDS) {
+    const text = query.get(id)
+    if (shape.hasRegion && text?.trim()) filters[id] = text
+  }
+  const free = new Set(choosable(shape).map(({ id }) => id))
   const asked = query.get('columns')?.split(',')
-  const columns = asked
-    ? shape.columns.filter(({ id, pinned }) => !pinned && asked.includes(id)).map(({ id }) => id)
-    : shownByDefault(shape)
+  const columns = asked ? [...new Set(asked)].filter((id) => free.has(id)) : shownByDefault(shape)
   const page = /^\d{1,9}$/.test(query.get('page') ?? '') ? Math.max(0, Number(query.get('page')) - 1) : 0
   return { sort: sort.length ? sort : [shape.defaultSort], filters, columns, page }
 }
@@ -69,7 +83,9 @@ export function writeTableState(shape: TableShape, state: TableState): string {
   const query = new URLSearchParams()
   const sort = state.sort.map(writeSort).join(',')
   if (sort !== writeSort(shape.defaultSort)) query.set('sort', sort)
-  for (const { id } of shape.columns) if (state.filters[id]?.trim()) query.set(id, state.filters[id])
+  for (const id of [...shape.columns.map((column) => column.id), ...REGION_FIELDS]) {
+    if (state.filters[id]?.trim()) query.set(id, state.filters[id])
+  }
   const columns = state.columns.join(',')
   if (columns !== shownByDefault(shape).join(',')) query.set('columns', columns)
   if (state.page > 0) query.set('page', String(state.page + 1))

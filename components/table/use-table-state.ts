@@ -1,19 +1,20 @@
 'use client'
 
 import { useRouter, useSearchParams } from 'next/navigation'
-import { useCallback, useState, useTransition } from 'react'
+import { useCallback, useRef, useState, useTransition } from 'react'
 import { readTableState, writeTableState, type TableShape, type TableState } from './table-state'
 
 /**
- * The state of a table, kept in the address. Who sorts and filters decides how: `browser` only writes the address, `server`
- * goes there, so that the page reads the other rows. Both replace the entry of the history: going back leaves the table.
+ * The state of a table, kept in the address: the page reads the rows it asks for. Each change is a step of the history, so that back
+ * undoes it; what is typed into one field in one go is one step.
  */
-export function useTableState(shape: TableShape, worker: 'browser' | 'server') {
+export function useTableState(shape: TableShape) {
   const router = useRouter()
   const search = useSearchParams().toString()
   const [isPending, startTransition] = useTransition()
   const [seen, setSeen] = useState(search)
   const [state, setState] = useState(() => readTableState(shape, search))
+  const typing = useRef<{ field: string; query: string } | null>(null)
 
   // The address changed from outside: a link to this page, or the way back to it.
   if (search !== seen) {
@@ -23,16 +24,19 @@ export function useTableState(shape: TableShape, worker: 'browser' | 'server') {
   }
 
   const update = useCallback(
-    (change: Partial<TableState>) => {
+    (change: Partial<TableState>, field?: string) => {
       // Other rows begin with their first page.
       const next = { ...state, ...(change.filters || change.sort ? { page: 0 } : {}), ...change }
-      setState(next)
+      const before = writeTableState(shape, state)
       const query = writeTableState(shape, next)
+      if (query === before) return
+      const goesOn = field !== undefined && typing.current?.field === field && typing.current.query === before
+      typing.current = field === undefined ? null : { field, query }
+      setState(next)
       const address = `${window.location.pathname}${query ? `?${query}` : ''}`
-      if (worker === 'browser') window.history.replaceState(null, '', address)
-      else startTransition(() => router.replace(address, { scroll: false }))
+      startTransition(() => (goesOn ? router.replace : router.push)(address, { scroll: false }))
     },
-    [router, shape, state, worker],
+    [router, shape, state],
   )
   return { state, update, isPending }
 }

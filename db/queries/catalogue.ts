@@ -1,8 +1,9 @@
 import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
-import type { CandidateState } from '../schema/intake'
+import type { CandidateState, StateCause } from '../schema/intake'
 import { among, inCampaign } from './by-ids'
 import { isOwnJudgement } from './grading'
+import { isShownTo } from './verdicts'
 
 /** Which candidates of a campaign a list may draw on, and of which of them it may use what people judged. */
 export interface CandidateScope {
@@ -28,6 +29,12 @@ export interface CandidateRow {
   spread: number | null
   probability: number | null
   reason: string | null
+  lensRedshift: number | null
+  sourceRedshift: number | null
+  /** What its state rests on; null while it is open. */
+  decidedBy: StateCause | null
+  /** Of an entry of the catalogue. */
+  enteredAt: string | null
 }
 
 /**
@@ -53,6 +60,11 @@ function candidateRows(db: Kysely<DB>) {
     .selectFrom('candidate')
     .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
     .leftJoin('designation', 'designation.candidate_id', 'candidate.id')
+    .innerJoin('listing', (join) =>
+      join
+        .onRef('listing.campaign_id', '=', 'candidate.campaign_id')
+        .onRef('listing.candidate_id', '=', 'candidate.id'),
+    )
     .select([
       'candidate.id',
       'candidate.name',
@@ -68,6 +80,10 @@ function candidateRows(db: Kysely<DB>) {
       'verdict.spread',
       'verdict.probability',
       'verdict.reason',
+      'candidate.lens_redshift as lensRedshift',
+      'candidate.source_redshift as sourceRedshift',
+      'listing.decided_by as decidedBy',
+      'listing.entered_at as enteredAt',
     ])
     .select(sql<0 | 1>`candidate.truth is not null`.as('calibration'))
 }
@@ -88,109 +104,14 @@ export async function listCandidatesAfter(
   return candidateRows(db).where('candidate.id', 'in', ids).orderBy('candidate.id').execute()
 }
 
-export const CANDIDATE_ORDERS = [
-  'id',
-  'name',
-  'raDeg',
-  'decDeg',
-  'state',
-  'mean',
-  'spread',
-  'probability',
-  'score',
-] as const
-export type CandidateOrder = (typeof CANDIDATE_ORDERS)[number]
-
-const ORDER_COLUMN: Record<CandidateOrder, RawBuilder<unknown>> = {
-  id: sql`candidate.id`,
-  name: sql`candidate.name`,
-  raDeg: sql`candidate.ra_deg`,
-  decDeg: sql`candidate.dec_deg`,
-  score: sql`candidate.score`,
-  mean: sql`verdict.mean`,
-  spread: sql`verdict.spread`,
-  probability: sql`verdict.probability`,
-  // In the order of a candidate's life.
-  state: sql`case candidate.state when 'open' then 0 when 'split' then 1 when 'confirmed' then 2 else 3 end`,
+/** In the order of the ids given. */
+export async function readCandidateRows(db: Kysely<DB>, ids: readonly number[]): Promise<CandidateRow[]> {
+  return inOrder(ids, await candidateRows(db).where('candidate.id', 'in', among(ids)).execute())
 }
 
-const VERDICT_ORDERS: readonly CandidateOrder[] = ['mean', 'spread', 'probability']
-const JUDGED_ORDERS: readonly CandidateOrder[] = [...VERDICT_ORDERS, 'state']
-
-export interface CandidateFilter {
-  states?: readonly CandidateState[]
-  /** Candidates whose state the reader may not see yet. */
-  withheld?: boolean
-  /** What the first pass has not sent on. */
-  notSentOn?: boolean
-  /** Part of the name, without regard to case. */
-  name?: string
-  calibration?: boolean
-}
-
-function filtered(db: Kysely<DB>, scope: CandidateScope, filter: CandidateFilter) {
-  const { states = [], withheld = false, notSentOn = false, name, calibration } = filter
-  const pattern = `%${(name ?? '').replace(/[\\%_]/g, '\\$&')}%`
-  return candidates(db, scope)
-    .$if(states.length > 0 || withheld || notSentOn, (query) =>
-      query.where((e) =>
-        e.or([
-          ...(states.length ? [e.and([e('candidate.state', 'in', [...states]), isRevealed(scope)])] : []),
-          ...(withheld ? [e.not(isRevealed(scope))] : []),
-          ...(notSentOn ? [e.and([e('candidate.first_pass', '=', 'dropped'), e('candidate.truth', 'is', null)])] : []),
-        ]),
-      ),
-    )
-    .$if(Boolean(name), (query) => query.where(sql<SqlBool>`candidate.name like ${pattern} escape '\\'`))
-    .$if(calibration !== undefined, (query) => query.where('candidate.truth', calibration ? 'is not' : 'is', null))
-}
-
-/**
- * One slice of the candidates, sorted; what is unknown comes last either way. Only the ids are sorted, and the rows of the
- * slice read afterwards, so that 100,000 candidates stay quick.
- */
-export async function listCandidateSlice(
-  db: Kysely<DB>,
-  scope: CandidateScope,
-  slice: { filter: CandidateFilter; order: CandidateOrder; descending: boolean; offset: number; limit: number },
-): Promise<CandidateRow[]> {
-  const { order, descending } = slice
-  const column = ORDER_COLUMN[order]
-  const judged = JUDGED_ORDERS.includes(order) && scope.judgedBy !== null
-  // Where a value is withheld, its place in the order must not give it away. A grader is told no verdict that leaves it open.
-  const told = VERDICT_ORDERS.includes(order) ? sql<SqlBool>`verdict.outcome <> 'open'` : sql<SqlBool>`true`
-  const key = judged ? sql`case when ${isRevealed(scope)} and ${told} then ${column} end` : column
-  const ids = await filtered(db, scope, slice.filter)
-    .select('candidate.id')
-    .$if(VERDICT_ORDERS.includes(order), (query) =>
-      query.leftJoin('verdict', (join) =>
-        join
-          .onRef('verdict.candidate_id', '=', 'candidate.id')
-          // The plus lets SQLite find it in the index of candidates, which holds mean and spread, and not in the table.
-          .on(sql<SqlBool>`+verdict.id = candidate.verdict_id`),
-      ),
-    )
-    .$if(order !== 'id', (query) => query.orderBy(key, (by) => (descending ? by.desc() : by.asc()).nullsLast()))
-    .orderBy('candidate.id', descending ? 'desc' : 'asc')
-    .limit(slice.limit)
-    .offset(slice.offset)
-    .execute()
-  const place = new Map(ids.map(({ id }, index) => [id, index]))
-  const rows = await candidateRows(db)
-    .where('candidate.id', 'in', among([...place.keys()]))
-    .execute()
+function inOrder<Row extends { id: number }>(ids: readonly number[], rows: readonly Row[]): Row[] {
+  const place = new Map(ids.map((id, index) => [id, index]))
   return rows.toSorted((a, b) => place.get(a.id)! - place.get(b.id)!)
-}
-
-export async function countCandidateSlice(
-  db: Kysely<DB>,
-  scope: CandidateScope,
-  filter: CandidateFilter,
-): Promise<number> {
-  const row = await filtered(db, scope, filter)
-    .select((e) => e.fn.countAll<number>().as('count'))
-    .executeTakeFirstOrThrow()
-  return row.count
 }
 
 /** Confirmed candidates. A calibration candidate is never one, whatever its state says. */
@@ -200,12 +121,8 @@ function confirmed(db: Kysely<DB>, scope: CandidateScope) {
     .where('candidate.truth', 'is', null)
 }
 
-/** In the order of their ids, from after `afterId`; only those whose verdict the reader may see. */
-export async function listEntriesAfter(
-  db: Kysely<DB>,
-  scope: CandidateScope,
-  page: { afterId: number; limit: number },
-) {
+/** What is confirmed and whose verdict the reader may see. */
+function entries(db: Kysely<DB>, scope: CandidateScope) {
   return confirmed(db, scope)
     .leftJoin('verdict', 'verdict.id', 'candidate.verdict_id')
     .leftJoin('ruling', (join) =>
@@ -238,10 +155,21 @@ export async function listEntriesAfter(
         .as('enteredAt'),
     )
     .where(isRevealed(scope))
-    .where('candidate.id', '>', page.afterId)
-    .orderBy('candidate.id')
-    .limit(page.limit)
-    .execute()
+}
+
+/** In the order of their ids, from after `afterId`. */
+export async function listEntriesAfter(
+  db: Kysely<DB>,
+  scope: CandidateScope,
+  page: { afterId: number; limit: number },
+) {
+  return entries(db, scope).where('candidate.id', '>', page.afterId).orderBy('candidate.id').limit(page.limit).execute()
+}
+
+/** In the order of the ids given. */
+export async function listEntriesAmong(db: Kysely<DB>, scope: CandidateScope, ids: readonly number[]) {
+  const rows = await entries(db, scope).where('candidate.id', 'in', among(ids)).execute()
+  return inOrder(ids, rows)
 }
 export type EntryRow = Awaited<ReturnType<typeof listEntriesAfter>>[number]
 
@@ -249,8 +177,14 @@ export type EntryRow = Awaited<ReturnType<typeof listEntriesAfter>>[number]
  * The answers that count, by candidate and in the order given: of each person the newest, first look or asked for. A later
  * row of the same person is either a correction of the earlier one or a look that they were asked for afterwards. Those of people who
  * are left out of the consensus are marked.
+ * @param graderId a grader who is shown them: of a calibration stamp their own, and those of people whose messages they read
  */
-export async function listEntryAnswers(db: Kysely<DB>, campaignId: number, candidateIds: readonly number[]) {
+export async function listEntryAnswers(
+  db: Kysely<DB>,
+  campaignId: number,
+  candidateIds: readonly number[],
+  graderId?: number,
+) {
   return db
     .selectFrom('grade')
     .innerJoin('membership', (join) =>
@@ -273,6 +207,7 @@ export async function listEntryAnswers(db: Kysely<DB>, campaignId: number, candi
     .where(inCampaign('grade.campaign_id', campaignId))
     .where('grade.candidate_id', 'in', among(candidateIds))
     .where('grade.occasion', 'in', ['first', 'asked'])
+    .$if(graderId !== undefined, (query) => query.where(isShownTo(graderId!)))
     .where((e) =>
       e.not(
         e.exists(

@@ -10,7 +10,7 @@ import { countedAnswers } from './consensus'
  * The one condition of whose answers a grader is shown, of `grade`. Everybody grades a calibration stamp and nothing is judged of it:
  * all its answers would tell that it is one. So there they are shown their own, and those of people whose messages they read.
  */
-function isShownTo(graderId: number): RawBuilder<SqlBool> {
+export function isShownTo(graderId: number): RawBuilder<SqlBool> {
   return sql<SqlBool>`(grade.person_id = ${graderId}
     or exists (select 1 from candidate where candidate.id = grade.candidate_id and candidate.truth is null)
     or exists (select 1 from message where message.candidate_id = grade.candidate_id and message.person_id = grade.person_id))`

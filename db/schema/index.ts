@@ -32,6 +32,7 @@ import type {
   ReferenceObjectTable,
 } from './matching'
 import type { MeasurementTable } from './measuring'
+import type { ListingTable, SavedViewTable } from './listing'
 import type { InvitationTable, PersonTable } from './people'
 import type {
   ReleaseAccessTable,
@@ -90,6 +91,8 @@ export interface DB {
   release_entry: ReleaseEntryTable
   release_file: ReleaseFileTable
   release_access: ReleaseAccessTable
+  listing: ListingTable
+  saved_view: SavedViewTable
   job: JobTable
   mail: MailTable
   audit_event: AuditEventTable

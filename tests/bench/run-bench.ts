@@ -11,6 +11,7 @@ import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
 import { benchPage } from './bench-page'
 import { benchQueue } from './bench-queue'
+import { benchTables } from './bench-tables'
 import { benchVotable } from './bench-votable'
 
 const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
@@ -24,6 +25,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   consensus: benchConsensus,
   'bench-page': benchPage,
   queue: benchQueue,
+  tables: benchTables,
 }
 
 process.env.RINGSIDE_PEERS ??= 'fixtures/peers'

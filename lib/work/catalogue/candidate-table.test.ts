@@ -1,7 +1,8 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { addCalibrationCandidate, addJudgedCandidate } from '@/tests/_support/judged-candidate'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
-import { candidateTable, type CandidateTableInput } from './candidate-table'
+import { candidateTable } from './candidate-table'
+import type { TableInput } from './table-input'
 
 let scenario: Scenario
 beforeEach(async () => {
@@ -9,7 +10,7 @@ beforeEach(async () => {
 })
 afterEach(() => scenario.db.destroy())
 
-async function tableFor(viewer: Scenario['lead'], input: Partial<CandidateTableInput> = {}) {
+async function tableFor(viewer: Scenario['lead'], input: Partial<TableInput> = {}) {
   const permit = await scenario.permit(viewer, 'read')
   return candidateTable(scenario.db, permit, {
     filter: {},
@@ -21,6 +22,12 @@ async function tableFor(viewer: Scenario['lead'], input: Partial<CandidateTableI
   })
 }
 
+const named = (part: string) => ({
+  columns: [{ column: 'name' as const, condition: { kind: 'contains' as const, parts: [part] } }],
+})
+const CALIBRATION = {
+  columns: [{ column: 'calibration' as const, condition: { kind: 'among' as const, values: ['calibration'] } }],
+}
 const names = (table: Awaited<ReturnType<typeof tableFor>>) => table.rows.map((row) => row.name)
 
 it('sorts by mean with what has none last, both ways', async () => {
@@ -59,14 +66,14 @@ it('finds what the first pass did not send on, for leads', async () => {
 
 it('finds by part of the name, taking % and _ for themselves', async () => {
   for (const name of ['SWS 10%', 'SWS 100', 'sws_1']) await addImagedCandidate(scenario.db, scenario.campaign, name)
-  expect(names(await tableFor(scenario.lead, { filter: { name: 'sws' } }))).toHaveLength(3)
-  expect(names(await tableFor(scenario.lead, { filter: { name: '10%' } }))).toEqual(['SWS 10%'])
-  expect(names(await tableFor(scenario.lead, { filter: { name: '_' } }))).toEqual(['sws_1'])
+  expect(names(await tableFor(scenario.lead, { filter: named('sws') }))).toHaveLength(3)
+  expect(names(await tableFor(scenario.lead, { filter: named('10%') }))).toEqual(['SWS 10%'])
+  expect(names(await tableFor(scenario.lead, { filter: named('_') }))).toEqual(['sws_1'])
 })
 
 it('counts what passes the filter and all there is, and pages through it', async () => {
   for (const name of ['a1', 'a2', 'a3', 'b1']) await addImagedCandidate(scenario.db, scenario.campaign, name)
-  const second = await tableFor(scenario.lead, { filter: { name: 'a' }, page: 1, pageSize: 2 })
+  const second = await tableFor(scenario.lead, { filter: named('a'), page: 1, pageSize: 2 })
   expect(second).toMatchObject({ count: 3, all: 4 })
   expect(names(second)).toEqual(['a3'])
 })
@@ -97,8 +104,8 @@ it('sorts by score and filters calibration for leads, and passes both over for o
     'high',
     'low',
   ])
-  expect(names(await tableFor(scenario.lead, { filter: { calibration: true } }))).toEqual(['calibration'])
-  expect(names(await tableFor(scenario.graders[0], { filter: { calibration: true } }))).toHaveLength(3)
+  expect(names(await tableFor(scenario.lead, { filter: CALIBRATION }))).toEqual(['calibration'])
+  expect(names(await tableFor(scenario.graders[0], { filter: CALIBRATION }))).toHaveLength(3)
 })
 
 it('gives each row its colour stamp by the newest recipe', async () => {

@@ -1,6 +1,12 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listEntriesAfter, listEntryAnswers, type EntryAnswer, type EntryRow } from '@/db/queries/catalogue'
+import {
+  listEntriesAfter,
+  listEntriesAmong,
+  listEntryAnswers,
+  type EntryAnswer,
+  type EntryRow,
+} from '@/db/queries/catalogue'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
 import type { StateCause } from '@/db/schema/intake'
@@ -55,15 +61,29 @@ export async function* catalogueEntries(
   for (let afterId = 0; ;) {
     const rows = await listEntriesAfter(db, scope, { afterId, limit: PAGE })
     if (rows.length === 0) return
-    const ids = rows.map((row) => row.id)
-    const answers = byCandidate(await listEntryAnswers(db, scope.campaignId, ids))
-    yield rows.map((row) => entryOf(row, answers.get(row.id) ?? []))
+    yield await withAnswers(db, scope.campaignId, rows)
     if (rows.length < PAGE) return
-    afterId = ids[ids.length - 1]
+    afterId = rows[rows.length - 1].id
   }
 }
 
-function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryAnswer[]> {
+/** These of the catalogue, in the order given; what is not in it, or not for this person to see, is left out. */
+export async function catalogueEntriesAmong(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  ids: readonly number[],
+): Promise<CatalogueEntry[]> {
+  const scope = candidateScope(permit)
+  return withAnswers(db, scope.campaignId, await listEntriesAmong(db, scope, ids))
+}
+
+async function withAnswers(db: Kysely<DB>, campaignId: number, rows: readonly EntryRow[]): Promise<CatalogueEntry[]> {
+  const ids = rows.map((row) => row.id)
+  const answers = byCandidate(await listEntryAnswers(db, campaignId, ids))
+  return rows.map((row) => entryOf(row, answers.get(row.id) ?? []))
+}
+
+export function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryAnswer[]> {
   const groups = new Map<number, EntryAnswer[]>()
   for (const answer of answers) {
     const group = groups.get(answer.candidateId)
@@ -101,7 +121,7 @@ function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry
   }
 }
 
-function countTags(answers: readonly EntryAnswer[]): { tag: string; count: number }[] {
+export function countTags(answers: readonly Pick<EntryAnswer, 'tags'>[]): { tag: string; count: number }[] {
   const counts = new Map<string, number>()
   for (const tag of answers.flatMap((answer) => fromJson(answer.tags))) counts.set(tag, (counts.get(tag) ?? 0) + 1)
   return [...counts]

@@ -4,6 +4,8 @@ import { candidateQuery } from '@/components/candidates/candidate-query'
 import { CandidatesScreen } from '@/components/candidates/candidates-screen'
 import { PAGE_SIZE } from '@/components/table/table-state'
 import { candidateTable } from '@/lib/work/catalogue/candidate-table'
+import { viewsOf } from './views-of'
+import { searchOf } from './search-of'
 
 export const metadata: Metadata = { title: 'Candidates' }
 
@@ -11,8 +13,8 @@ export const metadata: Metadata = { title: 'Candidates' }
 export default async function CandidatesPage({ params, searchParams }: PageProps<'/campaigns/[slug]/candidates'>) {
   const { slug } = await params
   const { db, permit } = await permitPage(slug, 'read', '/candidates')
-  const search = new URLSearchParams()
-  for (const [name, value] of Object.entries(await searchParams)) if (typeof value === 'string') search.set(name, value)
+  const search = searchOf(await searchParams)
   const table = await candidateTable(db, permit, candidateQuery(permit.role, search, PAGE_SIZE))
-  return <CandidatesScreen slug={slug} role={permit.role} table={table} />
+  const views = await viewsOf(db, permit, 'candidates')
+  return <CandidatesScreen slug={slug} role={permit.role} table={table} views={views} />
 }
