@@ -16,11 +16,14 @@ export function ReleaseCard({
   acronym,
   release,
   mayChange,
+  isBusy,
 }: {
   slug: string
   acronym: string
   release: ShownRelease
   mayChange: boolean
+  /** Whether the files of some release are being made, so that the next has to wait. */
+  isBusy: boolean
 }) {
   const { number, kind, making, notices } = release
   const id = `release-${number}`
@@ -53,7 +56,6 @@ export function ReleaseCard({
           <Files slug={slug} release={release} />
           {mayChange ? (
             <AccessForm
-              key={release.access}
               number={number}
               acronym={acronym}
               access={release.access}
@@ -65,7 +67,7 @@ export function ReleaseCard({
             <Link href={release.path} className="underline underline-offset-4">
               Its page
             </Link>
-            {mayChange && kind !== 'retraction' && !isWithdrawn ? (
+            {mayChange && !isBusy && kind !== 'retraction' && !isWithdrawn ? (
               <>
                 <Link
                   href={`${corrected}&kind=erratum`}

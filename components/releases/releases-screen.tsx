@@ -25,7 +25,7 @@ export function ReleasesScreen({
 }) {
   const publish = `/campaigns/${slug}/releases/new`
   const next = (releases[0]?.number ?? 0) + 1
-  const beingMade = releases.find(({ making }) => making !== null)
+  const isBusy = releases.some(({ making }) => making !== null)
   return (
     <div className="mx-auto flex max-w-5xl flex-col gap-8 px-5 py-8 md:px-10">
       <PageHead
@@ -40,7 +40,7 @@ export function ReleasesScreen({
           </>
         }
       >
-        {mayPublish && releases.length > 0 && !beingMade ? (
+        {mayPublish && releases.length > 0 && !isBusy ? (
           <ButtonLink tone="lamp" href={publish}>
             Prepare release {next}
           </ButtonLink>
@@ -64,7 +64,14 @@ export function ReleasesScreen({
       ) : null}
       <ol className="flex flex-col gap-10">
         {releases.map((release) => (
-          <ReleaseCard key={release.number} slug={slug} acronym={acronym} release={release} mayChange={mayPublish} />
+          <ReleaseCard
+            key={release.number}
+            slug={slug}
+            acronym={acronym}
+            release={release}
+            mayChange={mayPublish}
+            isBusy={isBusy}
+          />
         ))}
       </ol>
     </div>
