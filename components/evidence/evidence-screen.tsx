@@ -79,7 +79,7 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
     if (index < evidence.pictures.views.length) setView(index)
   })
   const { judgement } = evidence
-  const desk = useEvidenceDesk(measuring ?? null, evidence.pictures, light, evidence.pictures.views[view])
+  const desk = useEvidenceDesk(measuring ?? null, evidence.pictures, light, { shown: view, onChoose: setView })
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-6 px-4 py-5 md:px-8 md:py-6">
       <Neighbours slug={slug} {...neighbours} />
@@ -102,10 +102,15 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
         <Position raDeg={evidence.raDeg} decDeg={evidence.decDeg} />
         {judgement ? <StateReason judgement={judgement} /> : null}
       </header>
-      <div className="flex flex-col gap-8 lg:grid lg:grid-cols-[minmax(0,1fr)_22rem] lg:items-start">
+      <div
+        data-desk
+        className="flex scroll-mt-4 flex-col gap-8 lg:grid lg:grid-cols-[minmax(0,1fr)_22rem] lg:items-start"
+      >
         <div
           className={`flex min-w-0 flex-col gap-6 ${
-            desk.measuring ? 'sticky top-0 z-10 -my-2 bg-page py-2 max-lg:[&>:not(:first-child)]:hidden' : ''
+            desk.measuring
+              ? 'sticky top-0 z-10 -my-2 bg-page py-2 max-lg:max-h-[72dvh] max-lg:overflow-y-auto max-lg:[&>:not(:first-child)]:hidden'
+              : ''
           }`}
         >
           <div>

@@ -37,7 +37,7 @@ export function ViewsTray({
   blinking: boolean
   /** What lies over the large picture, and how the picture itself is drawn to make room around it. */
   over?: { layer: (view: PictureView) => ReactNode; transform?: string }
-  /** On a narrow screen only the picture, so that there is room below it. */
+  /** On a narrow screen no slides, so that there is room below the picture. */
   alone?: boolean
 }) {
   const { views } = pictures
@@ -85,7 +85,7 @@ export function ViewsTray({
             {view.label}
             {view.note ? <span className="text-text">. {view.note}</span> : null}
           </figcaption>
-          <LightSection light={light} keys={keys} className={`px-0.5 pt-1 ${alone ? 'max-lg:hidden' : ''}`} />
+          <LightSection light={light} keys={keys} className="px-0.5 pt-1" />
         </div>
         <ol
           aria-label="Views"

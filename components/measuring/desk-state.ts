@@ -34,6 +34,8 @@ export interface DeskState extends Measured {
   cross: SkyVector
   redshifts: Record<Which, RedshiftDraft>
   wide: boolean
+  /** Of a model: how much lies over the picture, so that arcs can be compared by eye. */
+  drawn: 'all' | 'arcs' | 'nothing'
   /** A kept measurement that is looked at and not changed. */
   opened: MeasurementShown | null
 }
@@ -60,6 +62,7 @@ export function emptyDesk(given: Given, fieldArcsec: number): DeskState {
     cross: HERE,
     redshifts: { lens: draftOf('lens', given.lens), source: draftOf('source', given.source) },
     wide: false,
+    drawn: 'all',
     opened: null,
   }
 }

@@ -57,8 +57,9 @@ export function useEvidenceDesk(
   measuring: Measuring | null,
   pictures: CandidatePictures,
   light: LightStore,
-  view: PictureView | undefined,
+  { shown: viewShown, onChoose }: { shown: number; onChoose: (index: number) => void },
 ): EvidenceDesk {
+  const view: PictureView | undefined = pictures.views[viewShown]
   const measurements = measuring?.measurements ?? NOTHING
   const { lensRedshift: lens, sourceRedshift: source } = measurements
   const desk = useDeskStore({ lens, source }, pictures.closeFieldArcsec)
@@ -81,6 +82,8 @@ export function useEvidenceDesk(
           desk={desk}
           light={light}
           view={view}
+          views={pictures.views}
+          onView={onChoose}
           measurements={measurements}
           onSave={save ?? (async () => ({ message: 'You may read here and not measure.' }))}
         />
@@ -91,10 +94,7 @@ export function useEvidenceDesk(
         measurements={measurements}
         shownIds={shownIds}
         onShow={(id) => setShownIds((now) => (now.includes(id) ? now.filter((one) => one !== id) : [...now, id]))}
-        onOpen={(kept) => {
-          desk.open(kept, true)
-          window.scrollTo({ top: 0 })
-        }}
+        onOpen={(kept) => desk.open(kept, true)}
         onWithdraw={measuring.withdraw}
       />
     ) : null,

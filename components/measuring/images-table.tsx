@@ -1,5 +1,5 @@
 import type { FittedImage } from '@/lib/work/measuring/fitted'
-import { arcsec, delayInWords, signed } from './in-figures'
+import { arcsec, delayInWords, magnificationInWords } from './in-figures'
 
 /** The images of the source's middle, in the order in which a change of the source shows in them. */
 export function ImagesTable({ images, delays }: { images: readonly FittedImage[]; delays: boolean }) {
@@ -16,7 +16,7 @@ export function ImagesTable({ images, delays }: { images: readonly FittedImage[]
       <table className="figures w-full text-note">
         <caption className="pb-1 text-left font-sans text-note text-mute">
           {images.length} {images.length === 1 ? 'image' : 'images'}
-          {Number.isFinite(total) ? `, magnified ${total.toFixed(1)} times in all` : ''}
+          {total < 1000 ? `, magnified ${total.toFixed(1)} times in all` : ''}
         </caption>
         <thead>
           <tr className="border-b border-line text-right font-sans text-mute">
@@ -42,7 +42,7 @@ export function ImagesTable({ images, delays }: { images: readonly FittedImage[]
               <td className="py-1 text-left whitespace-nowrap">
                 {arcsec(east)}, {arcsec(north)}
               </td>
-              <td>{magnification === null ? 'no bound' : signed(magnification.toFixed(1))}</td>
+              <td>{magnificationInWords(magnification)}</td>
               <td title={kind === 'minimum' ? 'minimum of the arrival time' : 'saddle point: mirrored'}>
                 {kind === 'minimum' ? '+' : '− mirrored'}
               </td>

@@ -26,6 +26,13 @@ export function powerOfTen(value: number, exponent = Math.floor(Math.log10(value
 export const threeDigits = (value: number): string =>
   signed(String(Number(value.toPrecision(3)).toLocaleString('en', { maximumSignificantDigits: 3, useGrouping: false })))
 
+/** Signed; without a bound on the critical curve. */
+export function magnificationInWords(magnification: number | null): string {
+  if (magnification === null) return 'no bound'
+  if (Math.abs(magnification) >= 1000) return magnification > 0 ? '> 1000' : '< −1000'
+  return signed(magnification.toFixed(1))
+}
+
 const SUPERSCRIPTS = '⁰¹²³⁴⁵⁶⁷⁸⁹'
 
 const superscript = (exponent: number): string =>
@@ -34,6 +41,7 @@ const superscript = (exponent: number): string =>
 /** Days, weeks or years: what a follow-up is planned by. */
 export function delayInWords(days: number): string {
   if (days === 0) return 'first'
+  if (days < 1 / 240) return '< 0.1 hours'
   if (days < 1) return `${(days * 24).toFixed(1)} hours`
   if (days < 1000) return `${threeDigits(days)} days`
   return `${threeDigits(days / 365.25)} years`

@@ -8,30 +8,35 @@ const plain = ({ value, low, high }: Interval) => ({
   between: low === high ? null : `${threeDigits(low)} to ${threeDigits(high)}`,
 })
 
+/** One power of ten for the value and both ends. */
 function mass({ value, low, high }: Interval) {
   const exponent = Math.floor(Math.log10(value))
-  const between = low === high ? null : `${powerOfTen(low, exponent)} to ${powerOfTen(high, exponent)}`
-  return { value: powerOfTen(value, exponent), between }
+  const ends = [low, high].map((end) => (end / 10 ** exponent).toFixed(2))
+  return { value: powerOfTen(value, exponent), between: low === high ? null : ends.join(' to ') }
 }
 
 /** What the Einstein radius weighs, each with the middle 68 % that errors and ranges leave. */
 export function MassTable({ mass: found, cosmology }: { mass: EinsteinMass; cosmology: Cosmology }) {
   const rows = [
-    ['Velocity dispersion, SIS', 'km/s', plain(found.velocityDispersionKmS)],
-    ['Mass inside the radius', 'M☉', mass(found.massSolar)],
-    ['Critical surface density', 'M☉/pc²', plain(found.criticalDensitySolarPerPc2)],
+    ['Dispersion, SIS', 'km/s', plain(found.velocityDispersionKmS)],
+    ['Mass inside', 'M☉', mass(found.massSolar)],
+    ['Critical density', 'M☉/pc²', plain(found.criticalDensitySolarPerPc2)],
     ['Einstein radius', 'kpc', plain(found.radiusKpc)],
   ] as const
   return (
     <div className="flex flex-col gap-2">
       <dl className="figures flex flex-col gap-1 text-small">
         {rows.map(([name, unit, { value, between }]) => (
-          <div key={name} className="flex flex-wrap justify-between gap-x-4">
+          <div key={name} className="flex justify-between gap-x-4">
             <dt className="font-sans text-note text-mute">{name}</dt>
             <dd className="text-right">
               {value} {unit}
-              {found.isAssumed ? <span className="font-sans text-note text-mute"> assumed</span> : null}
-              {between ? <span className="block text-note text-mute">{between}</span> : null}
+              {between ? (
+                <span className="block text-note text-mute">
+                  {between}
+                  {found.isAssumed ? ', assumed' : ''}
+                </span>
+              ) : null}
             </dd>
           </div>
         ))}

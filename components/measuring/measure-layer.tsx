@@ -57,9 +57,20 @@ function OnDesk({ state, frame }: { state: DeskState; frame: Frame }) {
   if (state.mode === 'model') {
     return (
       <>
-        <ModelCurves model={state.model} sourceRadiusArcsec={state.sourceRadiusArcsec} frame={frame} />
-        {state.marking ? null : <ModelHandles model={state.model} grip={state.grip} frame={frame} />}
-        <PointMarks points={state.points} chosen={state.marking ? state.chosen : null} frame={frame} />
+        {state.drawn === 'nothing' ? null : (
+          <ModelCurves
+            model={state.model}
+            sourceRadiusArcsec={state.sourceRadiusArcsec}
+            frame={frame}
+            arcsOnly={state.drawn === 'arcs'}
+          />
+        )}
+        {state.marking || state.drawn !== 'all' ? null : (
+          <ModelHandles model={state.model} grip={state.grip} frame={frame} />
+        )}
+        {state.drawn === 'all' ? (
+          <PointMarks points={state.points} chosen={state.marking ? state.chosen : null} frame={frame} />
+        ) : null}
       </>
     )
   }
@@ -94,6 +105,9 @@ function Stage({
   const onKeyDown = useStageKeys(desk, frame, () => setByKey(true))
   const setsPoints = !state.opened && (state.mode === 'arc' || state.marking)
   useEffect(() => box.current?.focus({ preventScroll: true }), [state.mode, state.marking])
+  const { opened } = state
+  // Picture and panel begin at the same height; both are brought into sight.
+  useEffect(() => box.current?.closest('[data-desk]')?.scrollIntoView?.({ block: 'start' }), [opened])
   useEffect(() => {
     const element = box.current
     const wheel = (event: WheelEvent) => {

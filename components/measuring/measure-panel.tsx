@@ -27,6 +27,9 @@ export interface MeasurePanelProps {
   view: PictureView
   measurements: CandidateMeasurements
   onSave: SaveAction
+  /** All views, to choose one where there is no room for slides. */
+  views: readonly PictureView[]
+  onView: (index: number) => void
 }
 
 /** Beside the picture while somebody measures. */
@@ -57,6 +60,7 @@ export function MeasurePanel(props: MeasurePanelProps) {
         </TextButton>
       </div>
       <Field desk={desk} light={light} state={state} />
+      <ViewSelect {...props} />
       {scale === null ? (
         <Notice>
           The pixel scale of this view is not known, so nothing can be measured on it in arcseconds. Choose another
@@ -71,6 +75,25 @@ export function MeasurePanel(props: MeasurePanelProps) {
         <Notice>Where north lies is not known here: up is taken for north. Radii hold; directions do not.</Notice>
       ) : null}
     </section>
+  )
+}
+
+function ViewSelect({ view, views, onView }: MeasurePanelProps) {
+  return (
+    <label className="flex items-center gap-2 text-note text-mute sm:hidden">
+      View
+      <select
+        value={views.indexOf(view)}
+        onChange={(event) => onView(Number(event.target.value))}
+        className="min-h-11 flex-1 rounded-control border border-edge bg-well px-2 text-small text-text"
+      >
+        {views.map(({ key, label }, index) => (
+          <option key={key} value={index}>
+            {label}
+          </option>
+        ))}
+      </select>
+    </label>
   )
 }
 

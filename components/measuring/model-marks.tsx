@@ -14,16 +14,19 @@ export function ModelCurves({
   model,
   sourceRadiusArcsec,
   frame,
+  arcsOnly = false,
 }: {
   model: LensAndSource
   sourceRadiusArcsec: number
   frame: Frame
+  arcsOnly?: boolean
 }) {
   const lens = lensModel(model.lens)
   const { critical, caustic, cut } = lensCurves(lens, CURVE_STEPS)
   const arcs = discOutlines(lens, model.source, sourceRadiusArcsec, OUTLINE_STEPS)
     .map(({ outer, inner }) => lineOf(outer, frame) + (inner ? lineOf(inner, frame) : ''))
     .join('')
+  if (arcsOnly) return <Line d={arcs} width={1} fill={0.18} />
   return (
     <>
       <Line d={arcs} width={1} fill={0.18} />
@@ -34,7 +37,7 @@ export function ModelCurves({
         const at = spotOf(image, frame)
         return (
           <g key={`${image.kind} ${image.east} ${image.north}`}>
-            <Ring at={at} size={0.9} />
+            <Line d={`M${at.x - 1} ${at.y - 1}l2 2m0 -2l-2 2`} />
             <Label at={{ x: at.x + 2.6, y: at.y - 1.6 }} text={image.kind === 'minimum' ? '+' : '−'} />
           </g>
         )

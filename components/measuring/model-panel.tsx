@@ -46,6 +46,16 @@ export function ModelPanel({
         value={marking ? 'points' : grip}
         onChange={(value) => desk.set(value === 'points' ? { marking: true } : { marking: false, grip: value })}
       />
+      <Choice
+        label="Drawn over the picture"
+        options={[
+          ['all', 'Everything'],
+          ['arcs', 'Arcs only'],
+          ['nothing', 'Nothing'],
+        ]}
+        value={state.drawn}
+        onChange={(drawn) => desk.set({ drawn })}
+      />
       <EinsteinRadius
         radiusArcsec={model.lens.einsteinRadiusArcsec}
         errorArcsec={fit?.result.parameters[0]?.uncertainty ?? null}
