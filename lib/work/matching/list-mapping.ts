@@ -26,6 +26,25 @@ export const MappingInput = z.strictObject({
   allTheSame: z.boolean(),
 })
 
+/** The choice as a form carries it, JSON in one field. @throws ZodError, also where it is no JSON */
+export function parseMappingField(value: unknown): ListMapping {
+  const text = typeof value === 'string' ? value : ''
+  return MappingInput.parse(z.string().transform(parseJson).parse(text))
+}
+
+function parseJson(text: string, context: z.RefinementCtx): unknown {
+  try {
+    return JSON.parse(text) as unknown
+  } catch {
+    context.addIssue({
+      code: 'custom',
+      path: ['mapping'],
+      message: 'Choose the columns again: the choice did not arrive.',
+    })
+    return z.NEVER
+  }
+}
+
 const NAMES = [
   /^(name|designation|id|object|objid|source_?id|lens_?name|system(_name)?|main_id|identifier)$/i,
   /name|desig/i,

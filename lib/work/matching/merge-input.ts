@@ -36,6 +36,9 @@ export const DifferInput = z.object({
 })
 export type DifferInput = z.output<typeof DifferInput>
 
+/** Which merged candidate is parted from the one that was kept. */
+export const PartInput = z.object({ merged: Id, reason: MergeReason })
+
 /** What a lead says of a candidate and a known object beside it. */
 export const ObjectInput = z.object({
   list: Id,

@@ -24,8 +24,10 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
     ...(permit.role === 'viewer' ? [] : [{ href: `${home}/me`, label: 'Your looks' }]),
     ...(lead ? [{ href: `${home}/intake`, label: 'Intake' }] : []),
     { href: `${home}/candidates`, label: 'Candidates', count: count('candidates') },
+    ...(permit.role === 'grader' ? [] : [{ href: `${home}/known`, label: 'Known objects' }]),
     ...(lead
       ? [
+          { href: `${home}/duplicates`, label: 'Duplicates' },
           { href: `${home}/splits`, label: 'Splits', count: count('split') },
           { href: `${home}/what-if`, label: 'What if' },
         ]
