@@ -44,7 +44,7 @@ const stage = `case c.state when 'open' then 0 when 'split' then 1 when 'confirm
 const entry = (candidate: string): string => `
   (entered_at, decided_by, entry_grades, entry_cannot_judge, entry_mean, entry_spread, grade_class, entry_tags) = (
   select
-    case when is_entry then coalesce((select e.at from entry e where e.candidate_id = id and e.event = 'entered'
+    case when is_entry then coalesce((select e.at from entry e where e.candidate_id = listed_id and e.event = 'entered'
       order by e.id desc limit 1), state_since) end,
     cause,
     iif(is_entry, n, null), iif(is_entry, u, null), iif(is_entry, 1.0 * s / n, null),
@@ -54,7 +54,7 @@ const entry = (candidate: string): string => `
       case when 1.0 * s / n >= 2.5 then 'A' when 1.0 * s / n >= 1.5 then 'B' when n > 0 then 'C' end) end,
     iif(is_entry, ${tagsOf(`${counted(candidate)} and ${included}`)}, null)
   from (
-    select c.id, c.state_since, c.state = 'confirmed' and c.truth is null as is_entry, iif(c.state = 'open', null, c.state_cause) as cause,
+    select c.id as listed_id, c.state_since, c.state = 'confirmed' and c.truth is null as is_entry, iif(c.state = 'open', null, c.state_cause) as cause,
       r.grade as ruled_grade
     from candidate c left join ruling r on r.id = c.ruling_id and r.outcome <> 'by verdict' where c.id = ${candidate}),
   (select count(*) filter (where g.grade <> 'U') as n, count(*) filter (where g.grade = 'U') as u,
