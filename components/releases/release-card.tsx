@@ -10,6 +10,8 @@ import type { ShownRelease } from './releases-screen'
 import { ACCESS_IN_WORDS, KIND_IN_WORDS, noticeInWords } from './words'
 
 const MAIN_FILES = ['RELEASE.zip', 'stamps.zip', 'catalogue.csv', 'catalogue.vot']
+/** Of a retraction: what tells why. */
+const STATEMENT_FILES = ['README.txt', 'RELEASE.zip']
 
 export function ReleaseCard({
   slug,
@@ -90,9 +92,11 @@ export function ReleaseCard({
   )
 }
 
-function Files({ slug, release: { number, files } }: { slug: string; release: ShownRelease }) {
+function Files({ slug, release: { number, kind, files } }: { slug: string; release: ShownRelease }) {
   const href = (name: string) => `/api/campaigns/${slug}/releases/${number}/files/${encodeURIComponent(name)}`
-  const main = MAIN_FILES.flatMap((name) => files.find((file) => file.name === name) ?? [])
+  const main = (kind === 'retraction' ? STATEMENT_FILES : MAIN_FILES).flatMap(
+    (name) => files.find((file) => file.name === name) ?? [],
+  )
   return (
     <div className="flex flex-col gap-3">
       <div className="flex flex-wrap gap-2">

@@ -137,7 +137,7 @@ export function dataciteJson(release: Cited, files: { sizes: string[]; formats: 
           : [{ rights: release.licence }],
         descriptions: [
           description(release.description, 'Abstract'),
-          description(cautionsOf(release).join(' '), 'Methods'),
+          description(cautionsOf(release).join(' '), 'Other'),
           description(`Made with ${release.software}.`, 'TechnicalInfo'),
           ...(release.statement ? [description(release.statement, 'Other')] : []),
         ],

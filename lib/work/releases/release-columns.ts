@@ -1,7 +1,7 @@
 import type { ReleaseEntry } from '@/db/schema/releases'
 import { fromJson } from '@/db/schema/values'
 import type { CellValue, Column } from '@/lib/science/formats/columns'
-import { EXPORT_COLUMNS } from '@/lib/work/catalogue/export-columns'
+import { CAUTION, EXPORT_COLUMNS } from '@/lib/work/catalogue/export-columns'
 
 /** A column that the working catalogue has too, by its name there, so that both say the same of it. */
 function same(name: string, value: (entry: ReleaseEntry) => CellValue): Column<ReleaseEntry> {
@@ -18,7 +18,12 @@ export const labelsInWords = (entry: Pick<ReleaseEntry, 'known_as'>): string | n
 
 /** The columns of a released catalogue in every format and in its cone search. Names are kept stable. */
 export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
-  same('designation', (entry) => entry.designation),
+  {
+    ...same('designation', (entry) => entry.designation),
+    description:
+      'Designation by the IAU rule: coordinates truncated, not rounded. Its acronym must be registered before it is published; ' +
+      'Ringside does not register it',
+  },
   {
     name: 'entry',
     datatype: 'char',
@@ -93,7 +98,7 @@ export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
     name: 'basis',
     datatype: 'char',
     ucd: 'meta.note',
-    description: 'What the row rests on',
+    description: `What the row rests on. ${CAUTION}`,
     value: () => 'visual grade, not a spectroscopic confirmation',
   },
 ]

@@ -2,6 +2,7 @@ import type { RunModel } from '@/db/schema/consensus'
 import { fromJson } from '@/db/schema/values'
 import type { Column } from '@/lib/science/formats/columns'
 import { GRADES } from '@/lib/science/agreement/grades'
+import { VISUAL_CAUTION } from './cautions'
 import type { ReleasedCandidate, ReleasedGrader } from './read-frozen'
 import type { ReleasedAnswer } from './what-counts'
 
@@ -49,7 +50,7 @@ export const CANDIDATE_COLUMNS: readonly Column<ReleasedCandidate>[] = [
   text(['ruling_grade', 'Grade that the ruling names', (row) => (row.ruled ? row.rulingGrade : null)]),
   text(['ruling_reason', 'Reason of the ruling', (row) => (row.ruled ? row.rulingReason : null)]),
   text(['ruled_by', 'Pseudonym of the lead who ruled', (row) => (row.ruled ? row.ruledBy : null)]),
-  text(['basis', 'What the row rests on', () => 'visual grade, not a spectroscopic confirmation']),
+  text(['basis', `What the row rests on. ${VISUAL_CAUTION}`, () => 'visual grade, not a spectroscopic confirmation']),
 ]
 
 export interface GradeOfCandidate extends ReleasedAnswer {

@@ -164,7 +164,9 @@ export async function* changesSince(
   }
 }
 
-export function votableMeta({ frozen: { release, rule }, address, corrected }: Surroundings): VotableMeta {
+type Titled = Pick<Surroundings, 'address' | 'corrected'> & { frozen: Pick<Frozen, 'release' | 'rule'> }
+
+export function votableMeta({ frozen: { release, rule }, address, corrected }: Titled): VotableMeta {
   return {
     tableName: 'catalogue',
     description: `${release.title}. ${release.description} ${cautionsOf(release).join(' ')}`,
