@@ -55,6 +55,8 @@ export interface EvidenceScreenProps {
   sendOnAction?: FormAction | null
   /** null: withheld, like the judgement. */
   measuring?: Measuring | null
+  /** What lies at its place, where there is anything to be told: in a word beside its name, and in full. */
+  place?: { label: ReactNode; full: ReactNode } | null
 }
 
 function Section({ title, children }: { title: string; children: ReactNode }) {
@@ -68,7 +70,7 @@ function Section({ title, children }: { title: string; children: ReactNode }) {
 
 /** Why this one is in the catalogue or is not: everything there is about one candidate, on one page. */
 export function EvidenceScreen(props: EvidenceScreenProps) {
-  const { slug, personId, evidence, neighbours, talk, asked, ruleAction, sendOnAction, measuring } = props
+  const { slug, personId, evidence, neighbours, talk, asked, ruleAction, sendOnAction, measuring, place } = props
   const [view, setView] = useState(0)
   const [blinking, setBlinking] = useState(false)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
@@ -87,6 +89,7 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
         <div className="flex flex-wrap items-center gap-x-4 gap-y-1">
           <h1 className="figures text-display font-semibold [overflow-wrap:anywhere]">{evidence.name}</h1>
           {judgement ? <StatePill state={judgement.state} /> : null}
+          {place?.label}
         </div>
         {judgement?.designation ? (
           <p className="figures">
@@ -138,6 +141,7 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
               <p className="text-note text-mute">Verdict of {moment(judgement.verdict.at)}.</p>
             </Section>
           ) : null}
+          {place?.full}
           <CandidateFacts evidence={evidence} />
         </div>
         <div className="flex min-w-0 flex-col gap-7">

@@ -9,6 +9,7 @@ import { candidateName } from '@/lib/work/rulings/candidate-name'
 import { isNotSentOn } from '@/lib/work/sheet/pass-of-candidate'
 import { ruleOnCandidateAction, sendOnAction } from './actions'
 import { measuringOf } from './measuring'
+import { placeOf } from './place'
 import { talkOf } from './talk'
 
 export async function generateMetadata({ params }: PageProps<'/campaigns/[slug]/candidates/[id]'>) {
@@ -29,6 +30,7 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
     if (error instanceof Problem && error.status === 404) notFound()
     throw error
   })
+  const place = evidence.judgement ? await placeOf(db, permit, id) : null
   return (
     <EvidenceScreen
       key={id}
@@ -40,7 +42,8 @@ export default async function CandidatePage({ params }: PageProps<'/campaigns/[s
       asked={evidence.judgement ? null : await askOfMe(db, permit, id)}
       measuring={await measuringOf(db, permit, id)}
       sendOnAction={await sendOnOf(slug, id, permit.role)}
-      ruleAction={permit.role === 'lead' ? ruleOnCandidateAction.bind(null, slug, id) : null}
+      place={place}
+      ruleAction={permit.role === 'lead' && !place?.isMerged ? ruleOnCandidateAction.bind(null, slug, id) : null}
     />
   )
 }
