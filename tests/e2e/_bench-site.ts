@@ -7,12 +7,12 @@ import { makeDataFolder, startTestServer, type TestServer } from './_server'
 export const BENCH = `/campaigns/${SLUG}/bench`
 
 /** A server whose one campaign has so many imaged candidates. */
-export async function startBenchSite(candidates: number): Promise<TestServer> {
+export async function startBenchSite(candidates: number, search = smallSearch): Promise<TestServer> {
   const dataFolder = await makeDataFolder()
   await seedSite(dataFolder)
   const server = await startTestServer(dataFolder)
   const cookie = await signInCookie(server.url)
-  const files = smallSearch(candidates)
+  const files = search(candidates)
   const send = async () => {
     for (let file = files.pop(); file; file = files.pop()) {
       const url = `${server.url}/api/campaigns/${SLUG}/files/${file.name}`
