@@ -13,7 +13,8 @@ export function withError(value: number, error: number | null, unit = ''): strin
   return `${signed(value.toFixed(decimals))} ± ${error.toFixed(decimals)}${unit}`
 }
 
-export const signed = (text: string): string => text.replace('-', '−')
+/** With a true minus, and none before a zero. */
+export const signed = (text: string): string => (/^-0\.?0*$/.test(text) ? text.slice(1) : text.replace('-', '−'))
 
 export const arcsec = (value: number, decimals = 2): string => `${signed(value.toFixed(decimals))}″`
 

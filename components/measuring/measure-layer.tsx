@@ -166,7 +166,7 @@ function PointButton({
   chosen: boolean
 }) {
   const { x, y } = spotOf(point, frame)
-  const place = `${Math.abs(point.east).toFixed(2)}″ ${point.east < 0 ? 'west' : 'east'}, ${Math.abs(point.north).toFixed(2)}″ ${point.north < 0 ? 'south' : 'north'}`
+  const place = `${side(point.east, 'east', 'west')}, ${side(point.north, 'north', 'south')}`
   return (
     <button
       type="button"
@@ -177,4 +177,9 @@ function PointButton({
       className="absolute size-6 -translate-x-1/2 -translate-y-1/2 cursor-move rounded-full pointer-coarse:size-8"
     />
   )
+}
+
+function side(arcsec: number, positive: string, negative: string): string {
+  const length = Math.abs(arcsec).toFixed(2)
+  return `${length}″ ${arcsec < 0 && Number(length) > 0 ? negative : positive}`
 }

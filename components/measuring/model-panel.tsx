@@ -113,12 +113,12 @@ function FitPart({
           onChange={(value) => desk.set({ pointsAre: value })}
         />
         <Choice
-          label="Free to fit, besides radius and source"
+          label="Free in the fit, with the source"
           options={[
-            ['sphere', 'Nothing'],
-            ['ellipsoid', 'Shape'],
-            ['sphere-shear', 'Shear'],
-            ['ellipsoid-shear', 'Both'],
+            ['sphere', 'Radius'],
+            ['ellipsoid', '+ shape'],
+            ['sphere-shear', '+ shear'],
+            ['ellipsoid-shear', '+ both'],
           ]}
           value={fitKind}
           onChange={(value) => desk.set({ fitKind: value })}
