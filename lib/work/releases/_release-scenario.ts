@@ -1,12 +1,12 @@
-import { mkdtemp, rm } from 'node:fs/promises'
+import { createHash } from 'node:crypto'
+import { mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
-import { insertPerson } from '@/db/queries/people'
 import { findRelease, listReleaseFiles } from '@/db/queries/releases'
 import { toJson } from '@/db/schema/values'
 import type { GradeLetter } from '@/db/schema/grading'
 import { BlobStore } from '@/lib/platform/storage/blob-store'
-import { putStamp } from '@/lib/work/stamps/stamp-store'
+import { stampPath } from '@/lib/work/stamps/stamp-store'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { makeRelease, type ReleaseTools } from './make-release'
 import { publishRelease } from './publish-release'
@@ -16,9 +16,6 @@ export interface ReleaseScenario extends Scenario {
   tools: ReleaseTools
   end(): Promise<void>
 }
-
-/** Ten bytes that stand for a picture. */
-const picture = (name: string) => new TextEncoder().encode(`PNG of ${name}`)
 
 export async function makeReleaseScenario(rule: Parameters<typeof makeScenario>[0] = {}): Promise<ReleaseScenario> {
   const scenario = await makeScenario(rule)
@@ -41,7 +38,7 @@ export async function makeReleaseScenario(rule: Parameters<typeof makeScenario>[
 
 const NOW = '2026-02-03T04:05:06.000Z'
 
-/** A candidate with a colour stamp and first grades, a letter a grader; a blank passes one over. */
+/** A candidate with a colour stamp (bytes that stand for a picture) and first grades, a letter a grader; a blank passes one over. */
 export async function addGraded(
   scenario: ReleaseScenario,
   name: string,
@@ -56,7 +53,10 @@ export async function addGraded(
     .select('id')
     .where('campaign_id', '=', campaign.id)
     .executeTakeFirstOrThrow()
-  const { sha256, bytes } = putStamp(tools.stampFolder, picture(name))
+  const picture = new TextEncoder().encode(`PNG of ${name}`)
+  const sha256 = createHash('sha256').update(picture).digest('hex')
+  await mkdir(path.dirname(stampPath(tools.stampFolder, sha256)), { recursive: true })
+  await writeFile(stampPath(tools.stampFolder, sha256), picture)
   await db
     .insertInto('stamp')
     .values({
@@ -65,7 +65,7 @@ export async function addGraded(
       recipe_id: recipe.id,
       view: 'colour',
       sha256,
-      bytes,
+      bytes: picture.byteLength,
       width: 1,
       height: 1,
       note: null,
@@ -133,8 +133,4 @@ export async function readText(
   const file = files.find((one) => one.name === name)
   if (!file) throw new Error(`There is no ${name}.`)
   return new TextDecoder().decode(await tools.blobs.read(file.sha256))
-}
-
-export async function addPersonNamed({ db }: Scenario, name: string): Promise<number> {
-  return insertPerson(db, { email: `${name}@saltmarsh.test`, name, passwordHash: null, isAdmin: false, now: NOW })
 }

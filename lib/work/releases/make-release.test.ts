@@ -1,8 +1,15 @@
 import { createHash } from 'node:crypto'
-import { afterEach, expect, it } from 'vitest'
+import { afterEach, expect, it, vi } from 'vitest'
 import { listReleaseEntries } from '@/db/queries/releases'
 import { addGraded, makeReleaseScenario, publishAndMake, readText, type ReleaseScenario } from './_release-scenario'
+import { Readable } from 'node:stream'
+import { findReleaseById, listReleaseFiles } from '@/db/queries/releases'
+import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
+import { makeRelease } from './make-release'
+import { publishRelease } from './publish-release'
+import { RELEASE } from './_release-scenario'
 import { RELEASE_FILES } from './release-files'
+import { zipOf } from './zip-files'
 
 let scenario: ReleaseScenario
 afterEach(() => scenario.end())
@@ -54,4 +61,145 @@ it('says of each entry what the catalogue said when it was frozen', async () => 
   })
   expect(one.remarks!.split('\n')[0]).toBe('G02: a "ring", clearly')
   expect(three).toMatchObject({ row_number: 2, name: 'three', entry_key: 'SWS-J004000.00+200000.0', class: 'B' })
+})
+
+it('goes on where a process was killed, after whatever entry or file, and leaves nothing out', async () => {
+  scenario = await makeReleaseScenario({ gradesWanted: 4, leastGrades: 3 })
+  for (let index = 0; index < 5; index++) await addGraded(scenario, `lens ${index}`, 'AAAB', { raDeg: index })
+  const { id } = await publishRelease(scenario.db, await scenario.permit(scenario.lead, 'lead'), RELEASE)
+  let kills = 0
+  const seen = new Map<string, string>()
+  for (let made = false; !made;) {
+    await makeRelease(scenario.tools, id, async () => {
+      kills += 1
+      throw new Error('killed')
+    }).catch((error: Error) => expect(error.message).toBe('killed'))
+    for (const { name, sha256 } of await listReleaseFiles(scenario.db, id)) {
+      expect(seen.get(name) ?? sha256).toBe(sha256)
+      seen.set(name, sha256)
+    }
+    made = (await findReleaseById(scenario.db, id))?.made === 1
+  }
+  expect(kills).toBe(1 + RELEASE_FILES.length + 3)
+  const entries = await listReleaseEntries(scenario.db, id, { after: 0, limit: 9 })
+  expect(entries.map(({ row_number: row }) => row)).toEqual([1, 2, 3, 4, 5])
+  expect(seen.size).toBe(RELEASE_FILES.length + 3)
+})
+
+it('does nothing to a release that is complete', async () => {
+  await threeJudged()
+  const { release } = await publishAndMake(scenario)
+  await makeRelease(scenario.tools, release.id, async () => {
+    throw new Error('worked')
+  })
+})
+
+it('keeps the pictures of its entries for good, and waits for one that is missing', async () => {
+  await threeJudged()
+  const { db, tools } = scenario
+  const { id } = await publishRelease(db, await scenario.permit(scenario.lead, 'lead'), RELEASE)
+  const without = { ...tools, stampFolder: `${tools.stampFolder}-lost` }
+  await expect(makeRelease(without, id, async () => {})).rejects.toThrow(/picture was missing and is being made again/)
+  expect(await db.selectFrom('job').select('kind').execute()).toContainEqual({ kind: 'image-candidates' })
+  await makeRelease(tools, id, async () => {})
+  const [entry] = await listReleaseEntries(db, id, { after: 0, limit: 1 })
+  expect(new TextDecoder().decode(await tools.blobs.read(entry.thumbnail!))).toBe('PNG of one')
+  expect(JSON.parse(entry.stamps)).toEqual({ colour: entry.thumbnail })
+})
+
+it('is as of the freeze: what is graded, ruled or renamed afterwards is in the next one', async () => {
+  await threeJudged()
+  const { db, lead, graders } = scenario
+  const permit = await scenario.permit(lead, 'lead')
+  const { id } = await publishRelease(db, permit, RELEASE)
+  await db.updateTable('candidate').set({ name: 'renamed', dec_deg: 80 }).where('name', '=', 'one').execute()
+  const two = await db.selectFrom('candidate').select('id').where('name', '=', 'two').executeTakeFirstOrThrow()
+  await ruleOnCandidate(db, permit, two.id, { outcome: 'confirmed', grade: 'A', reason: 'Seen in the new image.' })
+  const last = await db.selectFrom('grade').selectAll().where('person_id', '=', graders[0].id).executeTakeFirstOrThrow()
+  await db
+    .insertInto('grade')
+    .values({ ...last, id: undefined, uid: 'later', grade: 'C', replaces: last.id })
+    .execute()
+  await makeRelease(scenario.tools, id, async () => {})
+  const first = await listReleaseFiles(db, id)
+  const csv = await readText(scenario, first, 'candidates.csv')
+  expect(csv).toContain('one,SWS J235959.97-000000.0,359.9999,-0.00001,confirmed,confirmed,4,0,2.75,')
+  expect(csv).toMatch(/^two,,.*,set aside,set aside,3,1,0,/m)
+  expect(await readText(scenario, first, 'grades.csv')).not.toContain('corrected')
+  const { files } = await publishAndMake(scenario)
+  expect(await readText(scenario, files, 'grades.csv')).toMatch(/^renamed,G02,first,A,no,corrected,/m)
+  expect(await readText(scenario, files, 'changes.csv')).toBe(
+    [
+      'name,designation,change,before,after',
+      'renamed,SWS J235959.97-000000.0,class,A,B',
+      'renamed,SWS J235959.97-000000.0,name,one,renamed',
+      'renamed,SWS J235959.97-000000.0,position,359.9999 -0.00001,359.9999 80',
+      'two,SWS J100024.00+021200.0,entered,set aside,confirmed',
+      '',
+    ].join('\r\n'),
+  )
+  expect(await readText(scenario, files, 'README.txt')).toContain(
+    'Against release 1: 1 entered the catalogue; 1 changed class; 1 renamed; 1 with another position.',
+  )
+})
+
+it('says in the files of a retraction what it withdraws and why, and has no row in any table', async () => {
+  await threeJudged()
+  await publishAndMake(scenario)
+  const { files } = await publishAndMake(scenario, { kind: 'retraction', corrects: 1, statement: 'Another field.' })
+  expect(await readText(scenario, files, 'README.txt')).toContain(
+    'THIS IS A RETRACTION. Release 1 is withdrawn and should not be used. Why:\n\nAnother field.',
+  )
+  for (const name of ['catalogue.csv', 'candidates.csv', 'grades.csv', 'graders.csv', 'changes.csv']) {
+    expect((await readText(scenario, files, name)).match(/\r\n/g)).toHaveLength(1)
+  }
+  expect(await readText(scenario, files, 'catalogue.vot')).toContain('name="retraction"')
+  expect(JSON.parse(await readText(scenario, files, 'datacite.json')).relatedIdentifiers).toEqual([
+    expect.objectContaining({ relationType: 'Obsoletes', relatedIdentifier: 'http://127.0.0.1:3000/r/north-field/1' }),
+  ])
+})
+
+it('says both cautions wherever there is place for text', async () => {
+  await threeJudged()
+  const { files } = await publishAndMake(scenario)
+  const WITH_TEXT =
+    'README.txt CITATION.txt CITATION.cff datacite.json catalogue-columns.csv catalogue.vot catalogue-binary2.vot catalogue.json rule.json'
+  for (const name of WITH_TEXT.split(' ')) {
+    const text = await readText(scenario, files, name)
+    expect(text, name).toContain('not spectroscopic confirmations')
+    expect(text, name).toMatch(/must be registered/)
+  }
+})
+
+it('packs the same files into the same bytes, wherever and whenever', async () => {
+  const archive = async () => {
+    const hash = createHash('sha256')
+    const members = ['a.txt', 'b/c.png'].map((name) => ({
+      name,
+      compress: true,
+      open: () => Readable.from([Buffer.from(name)]),
+    }))
+    for await (const part of zipOf(members)) hash.update(part)
+    return hash.digest('hex')
+  }
+  const here = await archive()
+  expect(await archive()).toBe(here)
+  vi.stubEnv('TZ', 'Pacific/Auckland')
+  vi.setSystemTime(new Date('2031-07-01'))
+  expect(await archive()).toBe(here)
+  vi.unstubAllEnvs()
+  vi.useRealTimers()
+})
+
+it('passes on the error of a member that cannot be read, so that nobody takes half an archive for a whole one', async () => {
+  const broken = Readable.from(
+    (async function* () {
+      yield Buffer.from('half')
+      throw new Error('the disk went away')
+    })(),
+  )
+  const read = async () => {
+    for await (const part of zipOf([{ name: 'a', compress: false, open: () => broken }])) void part
+  }
+  await expect(read()).rejects.toThrow('the disk went away')
 })

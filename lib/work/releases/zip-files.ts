@@ -10,7 +10,7 @@ export interface ZipMember {
 }
 
 /** In local time, because the format stores local time: the same files give the same archive anywhere. */
-const MEMBER_TIME = new Date(2000, 0, 1)
+const memberTime = () => new Date(2000, 0, 1)
 
 /**
  * An archive of files, one open at a time, in constant memory. Names, order and times are given, so that the same files give the same
@@ -31,7 +31,7 @@ async function addAll(zip: ZipFile, members: AsyncIterable<ZipMember> | Iterable
   for await (const { name, compress, open } of members) {
     const stream = open()
     const ended = once(stream, 'close')
-    zip.addReadStream(stream, name, { mtime: MEMBER_TIME, mode: 0o100644, forceDosTimestamp: true, compress })
+    zip.addReadStream(stream, name, { mtime: memberTime(), mode: 0o100644, forceDosTimestamp: true, compress })
     await ended
   }
   zip.end()
