@@ -1,7 +1,7 @@
 'use client'
 
 import { useTable, type RowData } from '@tanstack/react-table'
-import { useMemo, useState, type KeyboardEvent, type ReactNode } from 'react'
+import { useMemo, useRef, useState, type KeyboardEvent, type ReactNode } from 'react'
 import type { SkyPosition } from '@/lib/science/sky/separation'
 import { ActiveFilters } from './active-filters'
 import { ColumnChooser } from './column-chooser'
@@ -65,6 +65,11 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
   const defs = useMemo(() => columnDefs(columns), [columns])
   const filterCount = Object.keys(state.filters).length
   const [filtersOpen, setFiltersOpen] = useState(false)
+  const filtersButton = useRef<HTMLButtonElement>(null)
+  const closeFilters = () => {
+    setFiltersOpen(false)
+    filtersButton.current?.focus()
+  }
 
   const sorting = state.sort.map(({ id, descending }) => ({ id, desc: descending }))
   const pinned = columns.flatMap((column) => (column.pinned ? [column.id] : []))
@@ -111,7 +116,7 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
             normalised={(query) => writeTableState(shape, { ...readTableState(shape, query), page: 0 })}
           />
         ) : null}
-        <ToolButton aria-expanded={filtersOpen} onClick={() => setFiltersOpen(!filtersOpen)}>
+        <ToolButton ref={filtersButton} aria-expanded={filtersOpen} onClick={() => setFiltersOpen(!filtersOpen)}>
           Filters{filterCount > 0 ? ` (${filterCount})` : ''}
         </ToolButton>
         <ColumnChooser
@@ -135,7 +140,7 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
           onChange={setFilter}
           positions={positions}
           found={found}
-          onClose={() => setFiltersOpen(false)}
+          onClose={closeFilters}
         />
       ) : null}
       <div

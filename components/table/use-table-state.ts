@@ -14,14 +14,18 @@ export function useTableState(shape: TableShape) {
   const [isPending, startTransition] = useTransition()
   const [seen, setSeen] = useState(search)
   const [state, setState] = useState(() => readTableState(shape, search))
+  // Addresses that this table has asked for and that are still to come: whoever goes on meanwhile is not set back by them.
+  const [coming, setComing] = useState<readonly string[]>([])
   const typing = useRef<{ field: string; query: string } | null>(null)
 
-  // The address changed from outside: a link to this page, or the way back to it.
   if (search !== seen) {
     setSeen(search)
     const found = readTableState(shape, search)
-    if (writeTableState(shape, found) !== writeTableState(shape, state)) setState(found)
-  }
+    const query = writeTableState(shape, found)
+    if (coming.includes(query)) setComing(coming.slice(coming.indexOf(query) + 1))
+    // The address changed from outside: a link to this page, or the way back to it.
+    else if (query !== writeTableState(shape, state)) setState(found)
+  } else if (!isPending && coming.length > 0) setComing([])
 
   const update = useCallback(
     (change: Partial<TableState>, field?: string) => {
@@ -33,6 +37,7 @@ export function useTableState(shape: TableShape) {
       const goesOn = field !== undefined && typing.current?.field === field && typing.current.query === before
       typing.current = field === undefined ? null : { field, query }
       setState(next)
+      setComing((before) => [...before, query])
       const address = `${window.location.pathname}${query ? `?${query}` : ''}`
       startTransition(() => (goesOn ? router.replace : router.push)(address, { scroll: false }))
     },
