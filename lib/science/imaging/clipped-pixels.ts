@@ -71,18 +71,24 @@ function isFlat({ values, width, height }: NormalisedPlane, pixel: number): bool
   const within = value >= LEVEL_SIGMA ? LEVEL * value : 0
   const x = pixel % width
   const y = (pixel - x) / width
+  // Most are told by their four neighbours: a pixel of a plateau has one of its level among them.
+  const beside = isLevel(values[pixel - 1] - value, within) || isLevel(values[pixel + 1] - value, within)
+  if (!beside && !isLevel(values[pixel - width] - value, within) && !isLevel(values[pixel + width] - value, within)) {
+    return false
+  }
   const left = Math.max(0, x - 2)
   const right = Math.min(width - 1, x + 2)
   const top = Math.min(height - 1, y + 2)
   let level = 0
   for (let row = Math.max(0, y - 2); row <= top; row++) {
     for (let i = row * width + left; i <= row * width + right; i++) {
-      const apart = values[i] - value
-      if (apart <= within && apart >= -within) level++
+      if (isLevel(values[i] - value, within)) level++
     }
   }
   return level >= PLATEAU_PIXELS
 }
+
+const isLevel = (apart: number, within: number): boolean => apart <= within && apart >= -within
 
 /** Adds the plateaus that have an edge, with all that stands on them. */
 function growShoulders(

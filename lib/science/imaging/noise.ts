@@ -7,6 +7,7 @@
  * all else works on the histogram.
  */
 import { medianAbsoluteDeviationSigma } from './mad'
+import { Scratch } from './scratch'
 import { selectMedian } from './selection'
 
 export interface Noise {
@@ -28,6 +29,7 @@ const CENTRE_SHARE = 0.3
 
 /** Scratch of one call, kept to spare an allocation; emptied at each use. */
 const histogram = new Uint32Array(BINS)
+const collected = new Scratch()
 
 /**
  * @param plane width x height pixels, row by row; pixels that are not finite do not count.
@@ -35,7 +37,7 @@ const histogram = new Uint32Array(BINS)
  * where a galaxy's wings reach the edge.
  */
 export function estimateNoise(plane: Float32Array, width: number, height: number): Noise {
-  const values = new Float32Array(plane.length)
+  const values = collected.take(plane.length)
   const finite = collect(plane, values)
   const finiteFraction = plane.length > 0 ? finite / plane.length : 0
   if (finite === 0) return { background: 0, sigma: 0, finiteFraction }

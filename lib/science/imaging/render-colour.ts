@@ -8,6 +8,7 @@ import { neutralCores } from './neutral-cores'
 import type { NormalisedPlane } from './normalise-planes'
 import type { ColourLimits, Recipe } from './recipe'
 import { MISSING_GREY } from './render-grey'
+import { Scratch } from './scratch'
 import { smoothBinomial } from './smooth'
 import { whiteLevel } from './white-level'
 
@@ -76,6 +77,9 @@ function meanOf([red, green, blue]: Mixed): Float32Array {
 type Mixed = [Float32Array, Float32Array, Float32Array]
 type Channels = [Float32Array, Float32Array, Float32Array, Float32Array]
 
+const work = { redness: new Scratch(), blueness: new Scratch() }
+const smoothed = { intensity: new Scratch(), redness: new Scratch(), blueness: new Scratch() }
+
 /** Channels with their hue calmed, and the intensity. Missing pixels come out as 0. */
 function calmHues(
   [red, green, blue]: Mixed,
@@ -85,24 +89,24 @@ function calmHues(
 ): Channels {
   const size = red.length
   const intensity = new Float32Array(size)
-  const redness = new Float32Array(size)
-  const blueness = new Float32Array(size)
+  const redness = work.redness.take(size)
+  const blueness = work.blueness.take(size)
   for (let i = 0; i < size; i++) {
     const mean = (red[i] + green[i] + blue[i]) / 3
-    if (mean !== mean) continue
-    intensity[i] = mean
-    redness[i] = red[i] - mean
-    blueness[i] = blue[i] - mean
+    const known = mean === mean
+    if (known) intensity[i] = mean
+    redness[i] = known ? red[i] - mean : 0
+    blueness[i] = known ? blue[i] - mean : 0
   }
-  const smoothIntensity = smoothBinomial(intensity, width, height)
-  const smoothRedness = smoothBinomial(redness, width, height)
-  const smoothBlueness = smoothBinomial(blueness, width, height)
+  const smoothIntensity = smoothBinomial(intensity, width, height, 1, smoothed.intensity.take(size))
+  const smoothRedness = smoothBinomial(redness, width, height, 1, smoothed.redness.take(size))
+  const smoothBlueness = smoothBinomial(blueness, width, height, 1, smoothed.blueness.take(size))
   const r = new Float32Array(size)
   const g = new Float32Array(size)
   const b = new Float32Array(size)
   const threshold = hueFromSigma * hueFromSigma
   for (let i = 0; i < size; i++) {
-    const level = Math.max(0, smoothIntensity[i])
+    const level = smoothIntensity[i] > 0 ? smoothIntensity[i] : 0
     const power = level * level
     // Full hue well above the threshold; native hue another factor of ten in power above that.
     const hue = (saturation * power) / (power + threshold)

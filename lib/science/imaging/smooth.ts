@@ -1,10 +1,20 @@
+import { Scratch } from './scratch'
+
+const rowsSmoothed = new Scratch()
+
 /**
  * Binomial smoothing over 3 by 3 pixels, kernel (1 2 1) x (1 2 1) / 16, edges repeated. Independent noise falls to 3/8
  * of its size. The result is multiplied by `gain`. Missing (NaN) pixels spread to their neighbours, so replace them
- * first.
+ * first. `into` may be `values` themselves; both may be longer than the picture.
  */
-export function smoothBinomial(values: Float32Array, width: number, height: number, gain = 1): Float32Array {
-  const rows = new Float32Array(values.length)
+export function smoothBinomial(
+  values: Float32Array,
+  width: number,
+  height: number,
+  gain = 1,
+  into: Float32Array = new Float32Array(width * height),
+): Float32Array {
+  const rows = rowsSmoothed.take(width * height)
   for (let y = 0; y < height; y++) {
     const start = y * width
     const end = start + width - 1
@@ -19,7 +29,7 @@ export function smoothBinomial(values: Float32Array, width: number, height: numb
     rows[end] = (before + 3 * here) * 0.25
   }
   const share = gain / 4
-  const smoothed = new Float32Array(values.length)
+  const smoothed = into
   for (let y = 0; y < height; y++) {
     const here = y * width
     const above = y > 0 ? here - width : here

@@ -1,9 +1,12 @@
 import type { LimitsSigma } from './recipe'
+import { Scratch } from './scratch'
 import { selectRank } from './selection'
+
+const bright = new Scratch()
 
 /** The value that becomes white: the recipe's percentile of the finite pixels, held between its least and its most. */
 export function whiteLevel(values: Float32Array, limits: LimitsSigma): number {
-  const kept = new Float32Array(values.length)
+  const kept = bright.take(values.length)
   let count = 0
   for (let i = 0; i < values.length; i++) {
     const value = values[i]

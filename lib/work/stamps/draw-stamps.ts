@@ -2,7 +2,7 @@ import type { Recipe } from '@/lib/science/imaging/recipe'
 import { renderViews, type BandPlane } from '@/lib/science/imaging/render-views'
 import { encodePng } from './encode-png'
 import { bandPlane, readHeldPlane } from './read-cutout'
-import { putStamp } from './stamp-store'
+import type { StampWriter } from './stamp-store'
 import type { PreviewMade, PreviewTask, StampMade } from './worker-tasks'
 
 /** The recipe's views of planes that are read now, stored nowhere. */
@@ -23,10 +23,10 @@ export async function drawPreview({ planes, recipe }: PreviewTask): Promise<Prev
   return { views }
 }
 
-/** Renders the recipe's views and stores each as a PNG at native resolution. */
-export function drawStamps(planes: BandPlane[], recipe: Recipe, folder: string): StampMade[] {
+/** Renders the recipe's views and has each stored as a PNG at native resolution. */
+export function drawStamps(planes: BandPlane[], recipe: Recipe, stamps: StampWriter): StampMade[] {
   return renderViews(planes, recipe).map((view) => {
-    const stored = putStamp(folder, encodePng(view))
+    const stored = stamps.add(encodePng(view))
     return { view: view.key, ...stored, width: view.width, height: view.height, note: view.note }
   })
 }

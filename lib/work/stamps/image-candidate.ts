@@ -2,6 +2,7 @@ import { separationArcsec } from '@/lib/science/sky/separation'
 import { bandTaken } from '@/lib/work/intake/refusals'
 import { drawStamps } from './draw-stamps'
 import { bandPlane, readCutouts, readHeldPlane, type Cutout } from './read-cutout'
+import type { StampWriter } from './stamp-store'
 import {
   NOT_IMAGED,
   plannedPlanes,
@@ -26,7 +27,11 @@ interface Gathered {
 }
 
 /** Reads a candidate's new files and makes its stamps of them and of the planes it has already, all in one go. */
-export async function imageCandidate(candidate: CandidateToImage, task: ImageTask): Promise<CandidateOutcome> {
+export async function imageCandidate(
+  candidate: CandidateToImage,
+  task: ImageTask,
+  stamps: StampWriter,
+): Promise<CandidateOutcome> {
   const { files, read, replaced } = await gatherFiles(candidate, task.bands)
   const cutouts = new Map(read)
   const unreadable: string[] = []
@@ -52,12 +57,17 @@ export async function imageCandidate(candidate: CandidateToImage, task: ImageTas
     outcome.imagingFault = `${NOT_IMAGED}${unreadable.join(', ')} can no longer be read on the server. Send it again under the same name.`
     return outcome
   }
-  return ordered.length === 0 ? outcome : drawn(outcome, ordered, task)
+  return ordered.length === 0 ? outcome : drawn(outcome, ordered, task, stamps)
 }
 
-function drawn(outcome: CandidateOutcome, cutouts: Cutout[], task: ImageTask): CandidateOutcome {
+function drawn(
+  outcome: CandidateOutcome,
+  cutouts: Cutout[],
+  { recipe }: ImageTask,
+  stamps: StampWriter,
+): CandidateOutcome {
   try {
-    return { ...outcome, stamps: drawStamps(cutouts.map(bandPlane), task.recipe, task.stampFolder) }
+    return { ...outcome, stamps: drawStamps(cutouts.map(bandPlane), recipe, stamps) }
   } catch (error) {
     // A full disk is no fault of the files: the whole job is tried again later.
     if (!(error instanceof Error) || 'code' in error) throw error

@@ -15,6 +15,7 @@ import { imageCandidate } from './image-candidate'
 import { paintCandidate } from './paint-candidate'
 import type { PaintMade, PaintTask } from './paint-task'
 import { openFits } from './read-cutout'
+import { StampWriter } from './stamp-store'
 import type {
   CandidateOutcome,
   FileProbe,
@@ -33,8 +34,10 @@ import type {
 if (!isMainThread && process.platform === 'linux') setPriority(10)
 
 export async function image(task: ImageTask): Promise<CandidateOutcome[]> {
+  const stamps = new StampWriter(task.stampFolder)
   const outcomes: CandidateOutcome[] = []
-  for (const candidate of task.candidates) outcomes.push(await imageCandidate(candidate, task))
+  for (const candidate of task.candidates) outcomes.push(await imageCandidate(candidate, task, stamps))
+  stamps.write()
   return outcomes
 }
 

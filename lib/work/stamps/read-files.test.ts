@@ -4,7 +4,7 @@ import { cutoutFits, SIDE } from '@/tests/_support/cutouts'
 import { BANDS, delivered } from '@/tests/_support/delivered'
 import { makeIntake, type IntakeScenario } from '@/tests/_support/intake'
 import { picturesOf } from './candidate-pictures'
-import { stampPath } from './stamp-store'
+import { readStamp } from './stamp-store'
 
 let intake: IntakeScenario
 beforeEach(async () => {
@@ -50,7 +50,8 @@ describe('reading and imaging a delivery', () => {
     await deliverCandidates(1)
     await intake.read()
     for (const { view, sha256 } of await stampRows()) {
-      const metadata = await sharp(stampPath(intake.tools.stampFolder, sha256)).metadata()
+      const bytes = await readStamp(intake.tools.stampFolder, sha256)
+      const metadata = await sharp(bytes ?? new Uint8Array()).metadata()
       expect(metadata).toMatchObject({ format: 'png', width: SIDE, height: SIDE, channels: view === 'colour' ? 3 : 1 })
     }
   })
