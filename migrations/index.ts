@@ -13,6 +13,7 @@ import * as matching from './012-matching'
 import * as measuring from './013-measuring'
 import * as releases from './014-releases'
 import * as listing from './015-listing'
+import * as lateGrades from './016-late-grades'
 
 /** In order. A migration that has landed is never edited: a change is a new one. */
 export const migrations: Record<string, Migration> = {
@@ -30,4 +31,5 @@ export const migrations: Record<string, Migration> = {
   '013-measuring': measuring,
   '014-releases': releases,
   '015-listing': listing,
+  '016-late-grades': lateGrades,
 }

@@ -1,7 +1,7 @@
 import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { Rule } from '../schema/campaigns'
-import type { GradeLetter } from '../schema/grading'
+import type { GradeLetter, GradeRow } from '../schema/grading'
 import type { CandidateState } from '../schema/intake'
 import type { IsoTime, Json } from '../schema/values'
 import { countedAnswers } from './consensus'
@@ -49,7 +49,7 @@ export interface EvidenceAnswer {
   /** null for a person who is no member and never was. */
   pseudonym: string | null
   grade: GradeLetter
-  occasion: 'first' | 'repeat' | 'asked'
+  occasion: GradeRow['occasion']
   tags: Json<string[]>
   remark: string | null
   seconds: number | null

@@ -18,7 +18,8 @@ export interface GradeTable {
   campaign_id: number
   candidate_id: number
   person_id: number
-  occasion: 'first' | 'repeat' | 'asked'
+  /** 'late': it came when the candidate had all its looks, and counts nowhere. */
+  occasion: 'first' | 'repeat' | 'asked' | 'late'
   /** U is 'cannot judge'. */
   grade: GradeLetter
   tags: Json<string[]>
