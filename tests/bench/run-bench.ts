@@ -9,6 +9,7 @@ import { benchIntake } from './bench-intake'
 import { benchLens } from './bench-lens'
 import { benchLensLight } from './bench-lens-light'
 import { benchMatch } from './bench-match'
+import { benchMeasuring } from './bench-measuring'
 import { benchPage } from './bench-page'
 import { benchQueue } from './bench-queue'
 import { benchTables } from './bench-tables'
@@ -22,6 +23,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   match: benchMatch,
   votable: benchVotable,
   lens: benchLens,
+  measuring: benchMeasuring,
   consensus: benchConsensus,
   'bench-page': benchPage,
   queue: benchQueue,
