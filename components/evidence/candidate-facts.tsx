@@ -24,23 +24,25 @@ export function CandidateFacts({ evidence }: { evidence: CandidateEvidence }) {
         {sourceRedshift === null ? null : <Fact name="Redshift of the source">{sourceRedshift}</Fact>}
         {score === null ? null : <Fact name="Score of the machine search">{score}</Fact>}
       </dl>
-      <section className="flex flex-col gap-1.5">
-        <h2 className="text-small font-semibold text-mute">
-          {files.length === 1 ? 'The file it came from' : 'The files it came from'}
-        </h2>
-        {files.length === 0 ? (
-          <p className="text-small text-mute">No file has been read for it.</p>
-        ) : (
-          <ul className="figures text-small">
-            {files.map((file) => (
-              <li key={file.name} className="flex flex-wrap gap-x-3 [overflow-wrap:anywhere]">
-                {file.name}
-                <span className="text-mute">{file.bands.join(', ')}</span>
-              </li>
-            ))}
-          </ul>
-        )}
-      </section>
+      {files === null ? null : (
+        <section className="flex flex-col gap-1.5">
+          <h2 className="text-small font-semibold text-mute">
+            {files.length === 1 ? 'The file it came from' : 'The files it came from'}
+          </h2>
+          {files.length === 0 ? (
+            <p className="text-small text-mute">No file has been read for it.</p>
+          ) : (
+            <ul className="figures text-small">
+              {files.map((file) => (
+                <li key={file.name} className="flex flex-wrap gap-x-3 [overflow-wrap:anywhere]">
+                  {file.name}
+                  <span className="text-mute">{file.bands.join(', ')}</span>
+                </li>
+              ))}
+            </ul>
+          )}
+        </section>
+      )}
     </div>
   )
 }

@@ -1,4 +1,5 @@
-import { sql, type Kysely, type SqlBool } from 'kysely'
+import { randomInt } from 'node:crypto'
+import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import { toJson } from '../schema/values'
 import { among, inCampaign } from './by-ids'
@@ -118,6 +119,47 @@ export async function scoreByLot(db: Kysely<DB>, campaignId: number, share: numb
   return (await ordinary.where('id', '>=', from).orderBy('id').executeTakeFirst())?.score ?? null
 }
 
+/** Positions of some candidates, from one on that is drawn. */
+export async function listPositionsByLot(
+  db: Kysely<DB>,
+  campaignId: number,
+  share: number,
+): Promise<{ raDeg: number; decDeg: number }[]> {
+  const from = (where: RawBuilder<SqlBool>) =>
+    sql<{ raDeg: number; decDeg: number }>`
+    select ra_deg as raDeg, dec_deg as decDeg from candidate indexed by candidate_queue_shuffled
+    where campaign_id + 0 = ${campaignId} and imaged_at is not null and ${where} and truth is null
+      and ra_deg is not null and dec_deg is not null
+    order by spread limit ${POSITIONS}`.execute(db)
+  const place = Math.floor(share * 2 ** 32)
+  const { rows } = await from(sql<SqlBool>`spread >= ${place}`)
+  return rows.length === POSITIONS ? rows : [...rows, ...(await from(sql<SqlBool>`spread < ${place}`)).rows]
+}
+
+const POSITIONS = 400
+/** Numbers drawn at once among those of the candidates, and how often. */
+const DRAWN = 64
+const DRAWS = 8
+
+/** A number among those of the campaign's candidates that intake has left free; undefined where none is found. */
+async function freeIdAmong(db: Kysely<DB>, campaignId: number): Promise<number | undefined> {
+  const ends = await db
+    .selectFrom('candidate')
+    .select((e) => [e.fn.min('id').as('least'), e.fn.max('id').as('most')])
+    .where('campaign_id', '=', campaignId)
+    .where('truth', 'is', null)
+    .executeTakeFirst()
+  if (ends?.least == null) return undefined
+  for (let draw = 0; draw < DRAWS; draw++) {
+    const ids = Array.from({ length: DRAWN }, () => randomInt(ends.least, ends.most + 1))
+    const { rows } = await sql<{ id: number }>`
+      select value as id from json_each(${JSON.stringify(ids)}) where value not in (select id from candidate)
+      limit 1`.execute(db)
+    if (rows[0]) return rows[0].id
+  }
+  return undefined
+}
+
 export interface NewCalibrationStamp extends Omit<GalaxyFacts, 'id'> {
   campaignId: number
   truth: 'lens' | 'not a lens'
@@ -137,6 +179,8 @@ export async function insertCalibrationStamp(
   const { id } = await db
     .insertInto('candidate')
     .values({
+      // Among the candidates' own, else it would be told by a number above them all.
+      id: await freeIdAmong(db, stamp.campaignId),
       campaign_id: stamp.campaignId,
       name: stamp.name,
       ra_deg: stamp.raDeg,

@@ -50,7 +50,7 @@ export async function countLooks(db: Kysely<DB>, campaignId: number, personId: n
     .select((e) => e.fn.sum<number | null>('n').as('n'))
     .where('campaign_id', '=', campaignId)
     .where('person_id', '=', personId)
-    .where('occasion', 'in', ['first', 'repeat'])
+    .where('occasion', 'in', ['first', 'repeat', 'late'])
     .executeTakeFirstOrThrow()
   return row.n ?? 0
 }
@@ -68,7 +68,15 @@ function unseenStamps(db: Kysely<DB>, { campaignId, personId }: { campaignId: nu
     .where(none('grade'))
     .where(none('practice_answer'))
     .where(none('lease'))
+    .where(sentOnByPasser(campaignId, personId))
 }
+
+/** To the bench of somebody who makes the first pass comes nothing that they have not sent on themselves. */
+const sentOnByPasser = (campaignId: number, personId: number) => sql<SqlBool>`(
+  not exists (select 1 from campaign where campaign.id = ${campaignId} and campaign.uses_sheet = 1)
+  or not exists (select 1 from sheet_mark own where own.campaign_id = ${campaignId} and own.person_id = ${personId})
+  or coalesce((select mark from sheet_mark own where own.candidate_id = candidate.id and own.person_id = ${personId}
+    order by own.id desc limit 1), '') = 'sent on')`
 
 export async function listUnseenStamps(
   db: Kysely<DB>,

@@ -37,7 +37,7 @@ export async function countQueued(db: Kysely<DB>, campaignId: number): Promise<n
   return row.n ?? 0
 }
 
-/** By number of grades and id; by the machine's score, those without one last; by what a look tells. */
+/** By number of grades; by the machine's score, those without one last; by what a look tells. */
 export type WalkOrder = 'number' | 'score' | 'look'
 
 interface Along {
@@ -51,14 +51,15 @@ const ALONG: Record<WalkOrder, Along> = {
   look: { index: sql`candidate_queue_look`, key: sql<number>`look_value` },
 }
 
-/** A place in a bucket: keys fall, among equal keys ids rise. */
+/** A place in a bucket: keys fall, among equal keys the spread rises. */
 export interface Place {
   key: number
-  id: number
+  spread: number
 }
 
 export interface WalkedCandidate extends QueuedCandidate {
   key: number
+  spread: number
   /** Live leases of other people. */
   heldByOthers: number
   /** Of its estimate; null without one. */
@@ -82,11 +83,11 @@ export interface Walk {
 export async function walkBucket(db: Kysely<DB>, asker: Asker, walk: Walk): Promise<WalkedCandidate[]> {
   const { from, order, limit } = walk
   const { key } = ALONG[order]
-  const sorted = order === 'number' ? sql`id` : sql`${key} desc, id`
+  const sorted = order === 'number' ? sql`spread` : sql`${key} desc, spread`
   if (!from) return step(db, asker, walk, { range: sql<SqlBool>`true`, sorted, limit })
-  const tied =
-    order === 'number' ? sql<SqlBool>`id >= ${from.id}` : sql<SqlBool>`${key} = ${from.key} and id >= ${from.id}`
-  const found = await step(db, asker, walk, { range: tied, sorted: sql`id`, limit })
+  const behind = sql<SqlBool>`spread >= ${from.spread}`
+  const tied = order === 'number' ? behind : sql<SqlBool>`${key} = ${from.key} and ${behind}`
+  const found = await step(db, asker, walk, { range: tied, sorted: sql`spread`, limit })
   if (order === 'number' || found.length === limit) return found
   const below = { range: sql<SqlBool>`${key} < ${from.key}`, sorted, limit: limit - found.length }
   return [...found, ...(await step(db, asker, walk, below))]
@@ -101,10 +102,10 @@ async function step(
   const { index, key } = ALONG[order]
   const unsettled = order === 'look' || asker.untilSettled ? sql`and settled = 0` : sql``
   const { rows } = await sql<WalkedCandidate>`
-    select candidate.id, candidate.name, candidate.ra_deg as raDeg, candidate.dec_deg as decDeg, candidate.key,
+    select candidate.id, candidate.name, candidate.ra_deg as raDeg, candidate.dec_deg as decDeg, candidate.key, candidate.spread,
       ${othersLeases(asker)} as heldByOthers, estimate.evidence, estimate.probability, estimate.grades
     from (
-      select id, name, ra_deg, dec_deg, truth, ruling_id, grades_given, looks_asked, ${key} as key
+      select id, name, ra_deg, dec_deg, truth, ruling_id, grades_given, looks_asked, spread, ${key} as key
       from candidate indexed by ${index}
       where campaign_id = ${asker.campaignId} and grades_given = ${bucket.gradesGiven}
         and first_pass = ${bucket.firstPass} and imaged_at is not null ${unsettled} and ${range}
@@ -115,8 +116,8 @@ async function step(
   return rows
 }
 
-/** What may be lent to this person of a part of the candidates, spread by their hash in [from, to). */
-export async function listInHashRange(
+/** What may be lent to this person of the candidates whose spread is in [from, to). */
+export async function listInSpread(
   db: Kysely<DB>,
   asker: Asker,
   range: { from: number; to: number },
@@ -126,7 +127,7 @@ export async function listInHashRange(
     select candidate.id, candidate.name, candidate.ra_deg as raDeg, candidate.dec_deg as decDeg
     from candidate indexed by candidate_queue_shuffled
     where campaign_id + 0 = ${asker.campaignId} and imaged_at is not null
-      and (id * 2654435769 & 4294967295) >= ${range.from} and (id * 2654435769 & 4294967295) < ${range.to}
+      and spread >= ${range.from} and spread < ${range.to}
       and grades_given < ${asker.gradesWanted} ${sent} and ${lendable(asker)}`.execute(db)
   return rows
 }

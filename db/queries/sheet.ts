@@ -74,8 +74,8 @@ const unmarkedBy = ({ personId }: Passer) => sql<SqlBool>`coalesce((
   select mark from sheet_mark where sheet_mark.candidate_id = candidate.id and sheet_mark.person_id = ${personId}
     order by id desc limit 1), 'taken back') = 'taken back'`
 
-/** Along which index the first pass takes what waits: the highest score first, by the hash of ids from a place on, or a few by id. */
-export type PassOrder = 'score' | 'id' | { hashFrom: number }
+/** Along which index the first pass takes what waits: the highest score first, by the spread from a place on, or a few by id. */
+export type PassOrder = 'score' | 'id' | { spreadFrom: number }
 
 /** What waits for the first pass and lies on nobody's sheet. */
 export async function listToPass(
@@ -84,20 +84,19 @@ export async function listToPass(
   { order, limit }: { order: PassOrder; limit: number },
 ): Promise<{ id: number; name: string }[]> {
   const { campaignId } = passer
-  const hash = sql<number>`(id * 2654435769 & 4294967295)`
   const [index, where, sorted] =
     order === 'score'
       ? [
           sql`candidate_queue_score`,
           sql`campaign_id = ${campaignId} and grades_given = 0 and truth is null`,
-          sql`ifnull(score, -1e308) desc, id`,
+          sql`ifnull(score, -1e308) desc, spread`,
         ]
       : order === 'id'
         ? [sql`candidate_first_pass`, sql`campaign_id = ${campaignId} and truth is null`, sql`id`]
         : [
             sql`candidate_queue_shuffled`,
-            sql`campaign_id + 0 = ${campaignId} and ${hash} >= ${order.hashFrom} and truth is null`,
-            hash,
+            sql`campaign_id + 0 = ${campaignId} and spread >= ${order.spreadFrom} and truth is null`,
+            sql`spread`,
           ]
   const { rows } = await sql<{ id: number; name: string }>`
     select id, name from candidate indexed by ${index}
@@ -109,7 +108,22 @@ export async function listToPass(
   return rows
 }
 
-/** Calibration stamps that this person has not marked and that are not on their sheet. */
+/** How many lie on this person's sheet without a mark, calibration stamps among them and without. */
+export async function countOnSheet(db: Kysely<DB>, passer: Passer): Promise<{ all: number; candidates: number }> {
+  const held = (await listOnSheet(db, passer)).map(({ id }) => id)
+  const row = await db
+    .selectFrom('candidate')
+    .select((e) => e.fn.countAll<number>().as('n'))
+    .where('id', 'in', among(held))
+    .where(sql<SqlBool>`+truth is null`)
+    .executeTakeFirstOrThrow()
+  return { all: held.length, candidates: row.n }
+}
+
+/**
+ * Calibration stamps that this person has not met: neither marked, nor on their sheet, nor graded or on their bench, where nothing
+ * that comes to a sheet has been, nor told in practice.
+ */
 export async function listStampsToPass(db: Kysely<DB>, passer: Passer): Promise<{ id: number; name: string }[]> {
   return db
     .selectFrom('candidate')
@@ -121,6 +135,14 @@ export async function listStampsToPass(db: Kysely<DB>, passer: Passer): Promise<
     .where(
       sql<SqlBool>`not exists (select 1 from sheet_lease lease
         where lease.candidate_id = candidate.id and lease.person_id = ${passer.personId})`,
+    )
+    .where((e) =>
+      e.and(
+        ['grade', 'lease', 'practice_answer'].map(
+          (table) => sql<SqlBool>`not exists (select 1 from ${sql.table(table)} met
+            where met.candidate_id = candidate.id and met.person_id = ${passer.personId})`,
+        ),
+      ),
     )
     .orderBy('id')
     .execute()
@@ -238,7 +260,7 @@ export async function countFirstPass(db: Kysely<DB>, campaignId: number): Promis
   return counts
 }
 
-/** Marks of calibration stamps that are lenses, as they stand. */
+/** Marks of calibration stamps that are lenses, as they stand, without those of people to whom practice has told it. */
 export async function listLensMarks(db: Kysely<DB>, campaignId: number): Promise<StandingMark[]> {
   const rows = await db
     .selectFrom('candidate')
@@ -247,10 +269,17 @@ export async function listLensMarks(db: Kysely<DB>, campaignId: number): Promise
     .where('truth', '=', 'lens')
     .where('imaged_at', 'is not', null)
     .execute()
-  return listStandingMarks(
+  const told = await db
+    .selectFrom('practice_answer')
+    .select(['candidate_id as candidateId', 'person_id as personId'])
+    .where('campaign_id', '=', campaignId)
+    .execute()
+  const known = new Set(told.map(({ candidateId, personId }) => `${candidateId} ${personId}`))
+  const marks = await listStandingMarks(
     db,
     rows.map(({ id }) => id),
   )
+  return marks.filter(({ candidateId, personId }) => !known.has(`${candidateId} ${personId}`))
 }
 
 export async function newestMarkId(db: Kysely<DB>, campaignId: number): Promise<number> {

@@ -95,6 +95,8 @@ export interface CandidateTable {
   explanation: Generated<string | null>
   /** Where it is in the first pass over the sheet; counts only in campaigns that use it. */
   first_pass: Generated<'waiting' | 'sent on' | 'dropped'>
+  /** Drawn once and told to nobody: the order of the queue among equals. */
+  spread: Generated<number>
   imaged_at: IsoTime | null
   /** Standing first grades, 'cannot judge' included. */
   grades_given: Generated<number>

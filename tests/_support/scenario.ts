@@ -90,12 +90,16 @@ export async function makeScenario(rule: Partial<RuleInput> = {}, graderCount = 
   }
 }
 
+let made = 0
+
 /** A candidate that the queue may lend out, without files behind it. */
 export async function addImagedCandidate(
   db: Kysely<DB>,
   campaign: Campaign,
   name: string,
   position: { raDeg: number; decDeg: number } = { raDeg: 150.1, decDeg: 2.2 },
+  /** In the order in which they are made, so that tests know their queue; 'drawn' as it is outside of them. */
+  spread: 'rising' | 'drawn' = 'rising',
 ): Promise<number> {
   const row = await db
     .insertInto('candidate')
@@ -109,6 +113,7 @@ export async function addImagedCandidate(
       lens_redshift: null,
       source_redshift: null,
       truth: null,
+      ...(spread === 'rising' ? { spread: ++made } : {}),
       imaged_at: NOW,
       state_cause: null,
       state_cause_id: null,

@@ -79,8 +79,9 @@ async function makeSite(
 async function fill(db: Kysely<DB>, campaignId: number, people: readonly Viewer[], candidates: number): Promise<void> {
   await sql`
     with recursive number (n) as (select 1 union all select n + 1 from number where n < ${candidates})
-    insert into candidate (id, campaign_id, name, ra_deg, dec_deg, score, imaged_at, state_since, created_at, look_value)
-    select n, ${campaignId}, printf('SWS%07d', n), 150 + n / 1e5, 2, 1 - n / 1e7, ${NOW}, ${NOW}, ${NOW}, 0.2
+    insert into candidate (id, campaign_id, name, ra_deg, dec_deg, score, imaged_at, state_since, created_at, look_value,
+      spread)
+    select n, ${campaignId}, printf('SWS%07d', n), 150 + n / 1e5, 2, 1 - n / 1e7, ${NOW}, ${NOW}, ${NOW}, 0.2, random() & 4294967295
     from number`.execute(db)
   await sql`update candidate set truth = 'lens' where id > ${candidates - STAMPS}`.execute(db)
   const deep = Math.round(candidates / 20)

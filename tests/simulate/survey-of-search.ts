@@ -98,6 +98,8 @@ async function addStamps(db: Kysely<DB>, campaign: Campaign, search: SimulatedSe
           score: null,
           lens_redshift: null,
           source_redshift: null,
+          // In the order of their numbers, so that the same seed gives the same search.
+          spread: from + at,
           truth: stamp < scenario.candidates ? null : isLens[stamp] ? ('lens' as const) : ('not a lens' as const),
           imaged_at: START,
           state_cause: null,

@@ -6,6 +6,7 @@ import { USUAL_RANGES } from '@/lib/science/lensing/painting/painting-ranges'
 import { turnPixels } from '@/lib/science/lensing/painting/turn-pixels'
 import { separationArcsec } from '@/lib/science/sky/separation'
 import { picturesOf } from '@/lib/work/stamps/candidate-pictures'
+import { digitsOf } from './stamp-place'
 import { GALAXY_NAMES, makeGalaxies, paintAndImage } from './_galaxies'
 import { calibrationPage } from './calibration-page'
 import { orderPainting } from './order-painting'
@@ -46,12 +47,15 @@ describe('painted stamps', () => {
       expect(stamp.state).toBe('open')
       expect(stamp.imaged_at).not.toBeNull()
       const galaxy = galaxies.get(stamp.painted_over ?? 0)!
-      const apart = separationArcsec(
-        { raDeg: stamp.ra_deg!, decDeg: stamp.dec_deg! },
-        { raDeg: galaxy.ra_deg!, decDeg: galaxy.dec_deg! },
+      // The galaxies lie 360 arcsec apart, and so far or half of it a stamp lies from the nearest; of digits it has as many.
+      const own = { raDeg: stamp.ra_deg!, decDeg: stamp.dec_deg! }
+      const apart = [...galaxies.values()].map((one) =>
+        separationArcsec(own, { raDeg: one.ra_deg!, decDeg: one.dec_deg! }),
       )
-      expect(apart).toBeGreaterThan(35)
-      expect(apart).toBeLessThan(125)
+      expect(Math.min(...apart)).toBeGreaterThan(55)
+      expect(Math.min(...apart)).toBeLessThan(400)
+      expect(digitsOf(own.raDeg)).toBeLessThanOrEqual(digitsOf(galaxy.ra_deg!))
+      expect(digitsOf(own.decDeg)).toBeLessThanOrEqual(digitsOf(galaxy.dec_deg!))
       expect(stamp.pixel_scale_arcsec).toBeCloseTo(galaxy.pixel_scale_arcsec!, 9)
     }
     const ids = [...made.map(({ id }) => id), room.galaxies[0]]

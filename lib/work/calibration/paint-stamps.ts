@@ -6,6 +6,7 @@ import {
   listGalaxiesById,
   listMadeOfOrder,
   listNamesOfEnds,
+  listPositionsByLot,
   scoreByLot,
   type GalaxyFacts,
 } from '@/db/queries/calibration'
@@ -25,6 +26,7 @@ import type { Painted, PaintedFile, PaintRunner } from '@/lib/work/stamps/paint-
 import { heldPlane } from '@/lib/work/stamps/plan-imaging'
 import { EXPLAIN_COPY, explainPainting } from './explain-painting'
 import { proposeNames } from './stamp-name'
+import { digitsOf, placeLike } from './stamp-place'
 
 export interface PaintStampsPayload {
   campaignId: number
@@ -126,7 +128,7 @@ async function makeStamp(
   const held = (await listHeldPlanes(db, campaign.id, [galaxy.name]))
     .sort((a, b) => bands.indexOf(a.band) - bands.indexOf(b.band))
     .map((row) => heldPlane(tools, row))
-  const position = near(galaxy, random)
+  const position = await placeFor(db, campaign.id, galaxy, random)
   const name = await freeName(db, campaign.id, position, payload.lenses + payload.others, random)
   const task = {
     planes: held,
@@ -134,6 +136,7 @@ async function makeStamp(
     ranges: isLens ? payload.ranges : null,
     seed: random.next32(),
     name,
+    position,
     recipe: null,
   }
   const painted = await runner.paint(task)
@@ -145,14 +148,12 @@ async function makeStamp(
   return keepStamp(tools, payload, part, { galaxy, isLens, seed }, { name, score, position, painted })
 }
 
-/** A place of the same field, for cutouts that have no WCS to be moved. */
-function near({ raDeg, decDeg }: GalaxyFacts, random: SeededRandom): SkyPosition | null {
+/** Somewhere among the candidates, told with as many digits as the galaxy's own; null where it has no position. */
+async function placeFor(db: Kysely<DB>, campaignId: number, galaxy: GalaxyFacts, random: SeededRandom) {
+  const { raDeg, decDeg } = galaxy
   if (raDeg === null || decDeg === null) return null
-  const [step, angle] = [random.between(40, 120) / 3600, random.between(0, 2 * Math.PI)]
-  const north = decDeg + step * Math.cos(angle)
-  const to = Math.abs(north) > 89.9 ? decDeg : north
-  const around = raDeg + (step * Math.sin(angle)) / Math.max(0.01, Math.cos((to * Math.PI) / 180))
-  return { raDeg: ((around % 360) + 360) % 360, decDeg: to }
+  const sample = await listPositionsByLot(db, campaignId, random.uniform())
+  return placeLike(sample, { ra: digitsOf(raDeg), dec: digitsOf(decDeg) }, random)
 }
 
 async function freeName(
@@ -211,7 +212,7 @@ async function keepStamp(
         ...galaxy,
         campaignId,
         name,
-        ...(painted.position ?? position ?? { raDeg: null, decDeg: null }),
+        ...(position ?? painted.position ?? { raDeg: null, decDeg: null }),
         truth: isLens ? 'lens' : 'not a lens',
         score,
         paintedOver: galaxy.id,

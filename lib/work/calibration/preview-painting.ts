@@ -54,6 +54,7 @@ export async function previewPainting(
         ranges,
         seed: seed + 7919 * index,
         name: null,
+        position: null,
         recipe: { ...recipe, views: shownViews(recipe) },
       })
       const { name } = galaxy

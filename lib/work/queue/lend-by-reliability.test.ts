@@ -1,7 +1,7 @@
 import { CompiledQuery, type Kysely } from 'kysely'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { listNextByLead } from '@/db/queries/queue'
-import { listInHashRange, listOpenBuckets, walkBucket, type WalkOrder } from '@/db/queries/queue-walk'
+import { listInSpread, listOpenBuckets, walkBucket, type WalkOrder } from '@/db/queries/queue-walk'
 import type { DB } from '@/db/schema'
 import type { Answer } from '@/lib/science/agreement/grades'
 import { changeRule } from '@/lib/work/campaigns/change-settings'
@@ -155,7 +155,7 @@ describe('what it serves is found', () => {
     now: '2026-01-01T00:00:00.000Z',
   }
   const bucket = { gradesGiven: 1, firstPass: 'sent on', open: 9, size: 9 } as const
-  const from = { key: 0.5, id: 3 }
+  const from = { key: 0.5, spread: 3 }
   const along = (order: WalkOrder) => (db: Kysely<DB>) =>
     walkBucket(db, asker, { bucket, order, from, limit: 10, most: null })
 
@@ -165,8 +165,8 @@ describe('what it serves is found', () => {
     ['what is nearest to its number', 'candidate_queue (campaign_id=? AND grades_given=? AND', along('number')],
     [
       'a part in random order',
-      'candidate_queue_shuffled (<expr>=? AND <expr>>? AND <expr><?',
-      (db: Kysely<DB>) => listInHashRange(db, asker, { from: 0, to: 9 }),
+      'candidate_queue_shuffled (<expr>=? AND spread>? AND spread<?',
+      (db: Kysely<DB>) => listInSpread(db, asker, { from: 0, to: 9 }),
     ],
     ['what a lead reopened', 'candidate_asked (campaign_id=?', (db: Kysely<DB>) => listNextByLead(db, asker, 10)],
     ['how many are open', 'PRIMARY KEY (campaign_id=? AND person_id=?', (db: Kysely<DB>) => listOpenBuckets(db, asker)],

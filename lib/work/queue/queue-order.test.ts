@@ -5,7 +5,7 @@ import { recordGrade } from '@/lib/work/grading/record-grade'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { giveBack } from './give-back'
 import { lendNext } from './lend-next'
-import { blockAt, blocksFor, hashRange, shuffledBy } from './shuffled-order'
+import { blockAt, blocksFor, spreadRange, shuffledBy } from './shuffled-order'
 
 let scenario: Scenario
 let ids: number[]
@@ -96,7 +96,7 @@ describe('the order of a person', () => {
         const blocks = blocksFor(candidates)
         const visited = new Set(Array.from({ length: blocks }, (_, place) => blockAt(place, blocks, seed)))
         expect(visited.size).toBe(blocks)
-        expect(hashRange(blocks - 1, blocks).to).toBe(2 ** 32)
+        expect(spreadRange(blocks - 1, blocks).to).toBe(2 ** 32)
       }),
     )
   })

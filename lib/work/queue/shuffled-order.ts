@@ -1,9 +1,9 @@
 /**
- * A random order of a campaign's candidates for each person, without keeping one: the range of a hash of ids is cut into blocks of
- * some hundred candidates; a person goes through the blocks, and through the candidates of a block, in an order of their own. Pure.
+ * A random order of a campaign's candidates for each person, without keeping one: the range of the numbers by which they are spread is cut into
+ * blocks of some hundred candidates; a person goes through the blocks, and through the candidates of a block, in an order of their own. Pure.
  */
 
-/** 2^32: hashes are whole numbers below it. */
+/** 2^32: the spread is a whole number below it. */
 const RANGE = 2 ** 32
 const BLOCK = 256
 
@@ -18,7 +18,7 @@ export function blockAt(place: number, blocks: number, seed: number): number {
   return (Math.imul(step, place) + mixed(seed + 1)) & (blocks - 1)
 }
 
-export function hashRange(block: number, blocks: number): { from: number; to: number } {
+export function spreadRange(block: number, blocks: number): { from: number; to: number } {
   return { from: (block * RANGE) / blocks, to: ((block + 1) * RANGE) / blocks }
 }
 

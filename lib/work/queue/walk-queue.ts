@@ -31,7 +31,7 @@ export async function walkQueue(
       found.push(...noted(mark, await walkBucket(db, asker, { bucket, order, from: null, limit, most: null, free })))
     }
   }
-  if (order !== 'number') found.sort((a, b) => b.key - a.key || a.id - b.id)
+  if (order !== 'number') found.sort((a, b) => b.key - a.key || a.spread - b.spread)
   return found.slice(0, limit)
 }
 
@@ -57,9 +57,9 @@ async function walkFromMark(
   return [...head.filter(({ id }) => !known.has(id)), ...ahead]
 }
 
-const END = { key: -Infinity, id: Number.MAX_SAFE_INTEGER }
+const END = { key: -Infinity, spread: Number.MAX_SAFE_INTEGER }
 
 function noted(mark: WalkMark, found: WalkedCandidate[]): WalkedCandidate[] {
-  mark.place = found.length > 0 ? { key: found[0].key, id: found[0].id } : END
+  mark.place = found.length > 0 ? { key: found[0].key, spread: found[0].spread } : END
   return found
 }

@@ -1,9 +1,9 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import type { Asker, QueuedCandidate } from '@/db/queries/queue'
-import { countQueued, listInHashRange, listOpenBuckets } from '@/db/queries/queue-walk'
+import { countQueued, listInSpread, listOpenBuckets } from '@/db/queries/queue-walk'
 import type { DB } from '@/db/schema'
-import { blockAt, blocksFor, hashRange, shuffledBy } from './shuffled-order'
+import { blockAt, blocksFor, spreadRange, shuffledBy } from './shuffled-order'
 import type { WalkMarks } from './walk-marks'
 
 /** Blocks that are gone over in vain only now and then. */
@@ -28,11 +28,11 @@ export async function walkShuffled(
   for (let step = 0; step < blocks && found.length < Math.min(limit, open); step++) {
     const at = (begin + step) % blocks
     if (at === 0 && step > 0 && (found.length > 0 || blocks > MANY) && !mark.mayLookBack()) break
-    const range = hashRange(blockAt(at, blocks, seed), blocks)
-    const here = shuffledBy(await listInHashRange(db, asker, range), seed)
+    const range = spreadRange(blockAt(at, blocks, seed), blocks)
+    const here = shuffledBy(await listInSpread(db, asker, range), seed)
     if (here.length > 0) first ??= at
     found.push(...here)
   }
-  if (first !== null) mark.place = { key: first, id: 0 }
+  if (first !== null) mark.place = { key: first, spread: 0 }
   return found.slice(0, limit)
 }

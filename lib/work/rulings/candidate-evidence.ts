@@ -31,7 +31,8 @@ export interface CandidateEvidence {
   raDeg: number | null
   decDeg: number | null
   pixelScaleArcsec: number | null
-  files: { name: string; bands: string[] }[]
+  /** null for graders */
+  files: { name: string; bands: string[] }[] | null
   pictures: CandidatePictures
   /** null: withheld from a grader who has not graded this candidate yet. */
   judgement: Judgement | null
@@ -141,7 +142,8 @@ export async function candidateEvidence(
     raDeg: candidate.ra_deg,
     decDeg: candidate.dec_deg,
     pixelScaleArcsec: candidate.pixel_scale_arcsec,
-    files: await listFilesOf(db, candidateId),
+    // Those of a stamp that was made here are called otherwise than what was delivered.
+    files: permit.role === 'grader' ? null : await listFilesOf(db, candidateId),
     pictures: pictures ?? {
       views: [],
       geometry: { pixelScaleArcsec: null, northAngleDeg: null, eastLeft: true },

@@ -89,11 +89,11 @@ async function drawMore(transaction: Kysely<DB>, campaign: Campaign, passer: Pas
 
 /** From here on what waits is too sparse to be come upon by walking. */
 const FEW = 5000
-const HASHES = 2 ** 32
+const SPREAD = 2 ** 32
 
 /**
- * From all over the campaign, else a calibration stamp would stand out by its name among neighbours in intake: by the order of a hash
- * from a place that is drawn, or all that waits drawn from where it is little. Where the score comes first, that mixes them.
+ * From all over the campaign, else a calibration stamp would stand out by its name among neighbours in intake: by the spread from
+ * a place that is drawn, or all that waits drawn from where it is little. Where the score comes first, that mixes them.
  */
 async function drawWaiting(transaction: Kysely<DB>, campaign: Campaign, passer: Passer, limit: number) {
   if (campaign.queue_order === 'score') return listToPass(transaction, passer, { order: 'score', limit })
@@ -101,10 +101,10 @@ async function drawWaiting(transaction: Kysely<DB>, campaign: Campaign, passer: 
     const all = await listToPass(transaction, passer, { order: 'id', limit: FEW })
     return Array.from({ length: Math.min(limit, all.length) }, () => all.splice(randomInt(all.length), 1)[0])
   }
-  const ahead = await listToPass(transaction, passer, { order: { hashFrom: randomInt(HASHES) }, limit })
+  const ahead = await listToPass(transaction, passer, { order: { spreadFrom: randomInt(SPREAD) }, limit })
   if (ahead.length === limit) return ahead
   const known = new Set(ahead.map(({ id }) => id))
-  const round = await listToPass(transaction, passer, { order: { hashFrom: 0 }, limit })
+  const round = await listToPass(transaction, passer, { order: { spreadFrom: 0 }, limit })
   return [...ahead, ...round.filter(({ id }) => !known.has(id))].slice(0, limit)
 }
 

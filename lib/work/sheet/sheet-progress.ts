@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { countFirstPass, listLensMarks, listStampsToPass } from '@/db/queries/sheet'
+import { findMix } from '@/db/queries/mixing'
+import { countFirstPass, countOnSheet, listLensMarks, listStampsToPass } from '@/db/queries/sheet'
 import type { DB } from '@/db/schema'
 import { isoTime } from '@/lib/platform/clock'
 import { wilsonInterval, type Interval } from '@/lib/science/agreement/binomial-intervals'
@@ -27,20 +28,30 @@ export async function sheetProgress(db: Kysely<DB>, { campaign }: CampaignPermit
   return { waiting: counts.waiting, sentOn: counts['sent on'], dropped: counts.dropped }
 }
 
-/** For who makes the pass: whole per cent, and what is to come with calibration stamps among it, so that nothing tells their number. */
+/**
+ * For who makes the pass. Calibration stamps are in both, and what lies on the person's sheet counts alike whatever it is, so that a
+ * mark moves them by the same whether it is of a stamp or of a candidate.
+ */
 export interface PassersProgress {
   toCome: number
+  /** Whole per cent. */
   passedPercent: number
 }
 
 export async function passersProgress(db: Kysely<DB>, permit: CampaignPermit<'grade'>): Promise<PassersProgress> {
   const { campaign, viewer } = permit
+  const passer = { campaignId: campaign.id, personId: viewer.id, now: isoTime() }
   const { waiting, sentOn, dropped } = await sheetProgress(db, permit)
-  const unseen = await listStampsToPass(db, { campaignId: campaign.id, personId: viewer.id, now: isoTime() })
+  const { stamps } = await findMix(db, campaign.id)
+  const held = await countOnSheet(db, passer)
+  const rest = Math.max(0, waiting - held.candidates)
+  const unseen = (await listStampsToPass(db, passer)).length
   const share = campaign.calibration_share
-  const stamps = Math.min(unseen.length, Math.round((waiting * share) / (1 - share)))
-  const all = waiting + sentOn + dropped
-  return { toCome: waiting + stamps, passedPercent: all > 0 ? Math.floor((100 * (sentOn + dropped)) / all) : 0 }
+  const mixedIn = (candidates: number, most: number) => Math.min(most, Math.round((candidates * share) / (1 - share)))
+  const toCome = held.all + rest + mixedIn(rest, unseen)
+  const candidates = waiting + sentOn + dropped
+  const all = candidates + mixedIn(candidates, stamps)
+  return { toCome, passedPercent: all > 0 ? Math.max(0, Math.floor((100 * (all - toCome)) / all)) : 0 }
 }
 
 /** What share of known lenses the first pass sends on, by the marks as they stand. Leads: it tells who saw what. */

@@ -1,3 +1,4 @@
+import { sql } from 'kysely'
 import { beforeEach, describe, expect, it } from 'vitest'
 import { listToPass } from '@/db/queries/sheet'
 import { isoTime } from '@/lib/platform/clock'
@@ -202,7 +203,27 @@ describe('what who makes the pass is told', () => {
     const permit = await grader(0)
     expect(await passersProgress(scenario.db, permit)).toEqual({ toCome: 30, passedPercent: 0 })
     await scenario.mark(scenario.graders[0], [0, 1, 2], 'dropped')
-    expect(await passersProgress(scenario.db, permit)).toEqual({ toCome: 27, passedPercent: 15 })
+    expect(await passersProgress(scenario.db, permit)).toEqual({ toCome: 27, passedPercent: 10 })
+  })
+
+  it('falls alike with each mark and rises alike when it is taken back, whether of a candidate or of a stamp', async () => {
+    scenario = await makeSheetScenario(100, 60)
+    await scenario.db.updateTable('campaign').set({ calibration_share: 0.1 }).execute()
+    const permit = await grader(0)
+    const { stamps } = await lendSheet(scenario.db, permit, 60)
+    const places = stamps.map(({ id }) => scenario.ids.indexOf(id))
+    expect(places.filter((place) => place >= 100).length).toBeGreaterThan(0)
+    const before = await passersProgress(scenario.db, permit)
+    for (const place of places.slice(0, 30)) {
+      await scenario.mark(scenario.graders[0], [place], 'sent on')
+      expect((await passersProgress(scenario.db, permit)).toCome, `stamp ${place}`).toBe(before.toCome - 1)
+      await scenario.mark(scenario.graders[0], [place], 'taken back')
+      expect(await passersProgress(scenario.db, permit)).toEqual(before)
+    }
+    for (const [n, place] of places.slice(0, 30).entries()) {
+      await scenario.mark(scenario.graders[0], [place], 'dropped')
+      expect((await passersProgress(scenario.db, permit)).toCome).toBe(before.toCome - 1 - n)
+    }
   })
 
   it('comes from all over the campaign, so that no name stands out', async () => {
@@ -214,14 +235,61 @@ describe('what who makes the pass is told', () => {
   })
 })
 
-it('walks a large campaign by the hash of ids, whose two parts hold all that waits', async () => {
+it('walks a large campaign by the spread, whose two parts hold all that waits', async () => {
   scenario = await makeSheetScenario(40)
+  await sql`update candidate set spread = random() & 4294967295`.execute(scenario.db)
   const passer = { campaignId: scenario.campaign.id, personId: scenario.graders[0].id, now: isoTime() }
-  const from = (hashFrom: number) => listToPass(scenario.db, passer, { order: { hashFrom }, limit: 100 })
+  const from = (spreadFrom: number) => listToPass(scenario.db, passer, { order: { spreadFrom }, limit: 100 })
   const [ahead, all] = [await from(2 ** 31), await from(0)]
   expect(ahead.length).toBeGreaterThan(10)
   expect(all.slice(-ahead.length)).toEqual(ahead)
   expect(all.map(({ id }) => id).toSorted((a, b) => a - b)).toEqual(scenario.ids)
+})
+
+describe('calibration stamps between sheet and bench', () => {
+  const benchOf = async (n: number) => (await lendNext(scenario.db, await grader(n), 30)).candidates.map(({ id }) => id)
+  const isStamp = (id: number) => scenario.ids.indexOf(id) >= 20
+
+  beforeEach(async () => {
+    scenario = await makeSheetScenario(20, 10)
+  })
+
+  it('never bring to the bench of who makes the pass what they dropped or have not met', async () => {
+    const all = [...scenario.ids.keys()]
+    await scenario.mark(scenario.graders[0], all, 'dropped')
+    await scenario.mark(scenario.graders[0], [0, 1, 2, 3, 4, 5, 6, 7, 20, 21], 'sent on')
+    const own = await benchOf(0)
+    expect(own.filter((id) => !isStamp(id)).length).toBe(8)
+    expect(own.filter(isStamp).every((id) => [20, 21].includes(scenario.ids.indexOf(id)))).toBe(true)
+    // Somebody who made no pass meets any of them.
+    const seen = await benchOf(3)
+    expect(seen.filter(isStamp).length).toBeGreaterThan(2)
+  })
+
+  it('never bring to a sheet what lay on the bench, was graded there, or was told in practice', async () => {
+    const permit = await grader(1)
+    const grade = GradeInput.parse({ grade: 'A' })
+    for (const place of [20, 21, 22]) await recordGrade(scenario.db, permit, scenario.ids[place], grade)
+    for (const place of [23, 24, 25]) {
+      await scenario.db
+        .insertInto('practice_answer')
+        .values({
+          uid: `practice-${place}`,
+          campaign_id: scenario.campaign.id,
+          candidate_id: scenario.ids[place],
+          person_id: scenario.graders[1].id,
+          grade: 'A',
+          seconds: null,
+          given_at: isoTime(),
+        })
+        .execute()
+    }
+    const met = (await lendSheet(scenario.db, permit, 30)).stamps.map(({ id }) => scenario.ids.indexOf(id))
+    expect(met.filter((place) => place >= 20 && place <= 25)).toEqual([])
+    // Told the truth, nobody measures the pass by it.
+    await scenario.mark(scenario.graders[1], [23, 24], 'sent on')
+    expect(await sheetCompleteness(scenario.db, await lead())).toMatchObject({ lenses: 0 })
+  })
 })
 
 describe('the settings of the first pass', () => {

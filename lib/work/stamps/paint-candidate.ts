@@ -6,6 +6,7 @@ import { PaintingError, paintLens, type PlaneToPaint } from '@/lib/science/lensi
 import { turnPixels } from '@/lib/science/lensing/painting/turn-pixels'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import { imageCentre } from '@/lib/science/sky/image-centre'
+import type { SkyPosition } from '@/lib/science/sky/separation'
 import { wcsCards } from '@/lib/science/sky/wcs-cards'
 import type { Wcs } from '@/lib/science/sky/wcs'
 import { planeOrientation } from './candidate-geometry'
@@ -14,7 +15,7 @@ import type { Painted, PaintMade, PaintTask } from './paint-task'
 import { openFits, readHeldPlane } from './read-cutout'
 import type { HeldPlane } from './worker-tasks'
 
-/** Far enough that no two designations are the same and nothing is taken for a duplicate, near enough to be of the same field. */
+/** Of a preview, which is kept nowhere. */
 const MOVED_ARCSEC = [40, 120] as const
 
 /**
@@ -32,7 +33,7 @@ export async function paintCandidate(task: PaintTask): Promise<PaintMade> {
   if (read.length === 0) return { fault: 'It has no cutouts.' }
   const random = new SeededRandom(task.seed)
   const turned = chooseTurn(read, random)
-  const moved = moveOnSky(read, random)
+  const moved = moveOnSky(read, task.position, random)
   const planes = moved.map((plane) => ({ ...plane, ...turnPixels(plane, turned) }))
   try {
     const painted = task.ranges === null ? null : paintLens(planes, task.ranges, random)
@@ -76,12 +77,22 @@ function chooseTurn(planes: readonly PlaneToPaint[], random: SeededRandom): numb
   return first.width === first.height ? turn : [2, 4, 6][turn % 3]
 }
 
-function moveOnSky(planes: readonly PlaneToPaint[], random: SeededRandom): PlaneToPaint[] {
+function moveOnSky(
+  planes: readonly PlaneToPaint[],
+  position: SkyPosition | null,
+  random: SeededRandom,
+): PlaneToPaint[] {
   const distance = random.between(...MOVED_ARCSEC) / 3600
   const direction = random.between(0, 2 * Math.PI)
   return planes.map((plane) => {
     if (plane.wcs === null) return plane
+    const centre = imageCentre(plane.wcs, plane.width, plane.height)
     const [longitude, latitude] = plane.wcs.referencePoint
+    if (position && centre) {
+      const to = Math.max(-90, Math.min(90, latitude + position.decDeg - centre.decDeg))
+      const around = longitude + position.raDeg - centre.raDeg
+      return { ...plane, wcs: { ...plane.wcs, referencePoint: [((around % 360) + 360) % 360, to] as const } }
+    }
     const [north, east] = [distance * Math.cos(direction), distance * Math.sin(direction)]
     // Towards the equator where the step would reach over the pole.
     const to = Math.abs(latitude + north) > 89.9 ? latitude - north : latitude + north

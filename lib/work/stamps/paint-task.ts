@@ -15,6 +15,8 @@ export interface PaintTask {
   seed: number
   /** What the new cutouts call their object; null where none are written. */
   name: string | null
+  /** Where its middle is to lie; null moves it a little. */
+  position: SkyPosition | null
   /** The views of this recipe are drawn too; null for none. */
   recipe: Recipe | null
 }
