@@ -90,7 +90,7 @@ export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
   {
     name: 'thumbnail_sha256',
     datatype: 'char',
-    ucd: 'meta.checksum',
+    ucd: 'meta.id;meta.file',
     description: 'SHA-256 of the colour stamp in stamps.zip; empty where there is none',
     value: (entry) => entry.thumbnail,
   },

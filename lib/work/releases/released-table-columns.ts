@@ -61,7 +61,11 @@ export interface GradeOfCandidate extends ReleasedAnswer {
 export const GRADE_COLUMNS: readonly Column<GradeOfCandidate>[] = [
   text(['candidate', 'Name of the candidate', (row) => row.candidate]),
   text(['grader', 'Pseudonym of the grader, the same in every release of the campaign', (row) => row.by]),
-  text(['occasion', 'first look, repeat, or asked for by a lead', (row) => row.occasion]),
+  text([
+    'occasion',
+    'first look, repeat, asked for by a lead, or late: it came when the candidate had all its looks',
+    (row) => row.occasion,
+  ]),
   text(['grade', 'A sure, B probable, C possible, N not a lens, U cannot judge', (row) => row.grade]),
   text(['counts', 'yes or no: whether the verdict rests on it', (row) => (row.notCounted === null ? 'yes' : 'no')]),
   text(['why_not', 'Why it does not count', (row) => row.notCounted]),

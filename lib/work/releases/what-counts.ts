@@ -2,7 +2,7 @@ import type { ReleasedGrade } from '@/db/queries/release-making'
 
 export interface ReleasedAnswer extends ReleasedGrade {
   /** Why it does not count; null where it does. */
-  notCounted: 'corrected' | 'answered again when asked' | 'repeat look' | 'grader left out' | null
+  notCounted: 'corrected' | 'answered again when asked' | 'repeat look' | 'came late' | 'grader left out' | null
 }
 
 /**
@@ -15,13 +15,14 @@ export function whatCounts(grades: readonly ReleasedGrade[], leftOut: ReadonlySe
   const corrected = new Set<number>()
   for (const { id, candidateId, personId, occasion, replaces } of grades) {
     if (replaces !== null) corrected.add(replaces)
-    if (occasion === 'repeat') continue
+    if (occasion === 'repeat' || occasion === 'late') continue
     const key = `${candidateId} ${personId}`
     standing.set(key, Math.max(id, standing.get(key) ?? 0))
   }
   const reasonOf = ({ id, candidateId, personId, occasion }: ReleasedGrade): ReleasedAnswer['notCounted'] => {
     if (corrected.has(id)) return 'corrected'
     if (occasion === 'repeat') return 'repeat look'
+    if (occasion === 'late') return 'came late'
     if (standing.get(`${candidateId} ${personId}`) !== id) return 'answered again when asked'
     return leftOut.has(personId) ? 'grader left out' : null
   }
