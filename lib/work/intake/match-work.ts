@@ -28,20 +28,46 @@ export interface MatchDone {
   manifests: { name: string; header: string[]; columns: ManifestHeaders }[]
 }
 
-/** Matches, and remembers what it has parsed, so that a changed pattern does not read a manifest of 100,000 lines again. */
+/** A manifest as it was read, and as it was last parsed. */
+interface Read {
+  /** Size and time of the file. */
+  version: string
+  table: CsvTable
+  chosen: string
+  inHand: ManifestInHand
+}
+
+/**
+ * A thread gets another object for the same file with each question, so that files are told apart by name, size and time; null: a
+ * Blob that is no File has none of these.
+ */
+const versionOf = (file: Blob): string | null => (file instanceof File ? `${file.size} ${file.lastModified}` : null)
+
+/**
+ * Matches, and remembers what it has read and parsed: a changed column does not read a manifest of 100,000 lines again, a changed
+ * pattern does not parse it again.
+ */
 export function matcher(): (work: MatchWork) => Promise<MatchDone> {
-  const tables = new Map<Blob, CsvTable>()
-  const parsed = new Map<string, ManifestInHand>()
-  const inHand = async (name: string, file: Blob, chosen: ChosenColumns): Promise<ManifestInHand> => {
-    const key = `${name}\n${file.size}\n${JSON.stringify(chosen)}`
-    const found = parsed.get(key)
-    if (found) return found
-    const table = tables.get(file) ?? readCsv(new Uint8Array(await file.arrayBuffer()))
-    tables.set(file, table)
-    const columns = manifestColumns(table.header, chosen)
+  const known = new Map<string, Read>()
+  const inHand = async (name: string, file: Blob, chosenColumns: ChosenColumns): Promise<ManifestInHand> => {
+    const version = versionOf(file)
+    const chosen = JSON.stringify(chosenColumns)
+    const before = known.get(name)
+    const same = before !== undefined && before.version === version ? before : null
+    if (same?.chosen === chosen) return same.inHand
+    const table = same?.table ?? readCsv(new Uint8Array(await file.arrayBuffer()))
+    const columns = manifestColumns(table.header, chosenColumns)
     const { entries, problems, refusal } = parseManifestTable(table, columns)
-    const made = { name, header: table.header, columns, chosen, entries, problems, refusal: refusal?.reason ?? null }
-    parsed.set(key, made)
+    const made = {
+      name,
+      header: table.header,
+      columns,
+      chosen: chosenColumns,
+      entries,
+      problems,
+      refusal: refusal?.reason ?? null,
+    }
+    if (version !== null) known.set(name, { version, table, chosen, inHand: made })
     return made
   }
   return async ({ manifests, chosen, ...work }) => {
