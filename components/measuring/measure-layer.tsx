@@ -104,10 +104,14 @@ function Stage({
   const pointer = useStagePointer(desk, light, frame)
   const onKeyDown = useStageKeys(desk, frame, () => setByKey(true))
   const setsPoints = !state.opened && (state.mode === 'arc' || state.marking)
-  useEffect(() => box.current?.focus({ preventScroll: true }), [state.mode, state.marking])
+  useEffect(() => {
+    box.current?.focus({ preventScroll: true })
+  }, [state.mode, state.marking])
   const { opened } = state
   // Picture and panel begin at the same height; both are brought into sight.
-  useEffect(() => box.current?.closest('[data-desk]')?.scrollIntoView?.({ block: 'start' }), [opened])
+  useEffect(() => {
+    box.current?.closest('[data-desk]')?.scrollIntoView?.({ block: 'start' })
+  }, [opened])
   useEffect(() => {
     const element = box.current
     const wheel = (event: WheelEvent) => {
