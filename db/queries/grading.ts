@@ -82,11 +82,25 @@ export async function findStandingAnswer(
   candidateId: number,
   personId: number,
 ): Promise<GradeRow | null> {
+  return findNewestAnswer(db, candidateId, personId, ['first', 'asked'])
+}
+
+/** The person's newest answer that came when the candidate had all its looks. */
+export async function findLateAnswer(db: Kysely<DB>, candidateId: number, personId: number): Promise<GradeRow | null> {
+  return findNewestAnswer(db, candidateId, personId, ['late'])
+}
+
+async function findNewestAnswer(
+  db: Kysely<DB>,
+  candidateId: number,
+  personId: number,
+  occasions: readonly GradeRow['occasion'][],
+): Promise<GradeRow | null> {
   const row = await db
     .selectFrom('grade')
     .selectAll()
     .where('candidate_id', '=', candidateId)
-    .where('occasion', 'in', ['first', 'asked'])
+    .where('occasion', 'in', occasions)
     .where('person_id', '=', personId)
     .orderBy('id', 'desc')
     .limit(1)

@@ -123,6 +123,19 @@ describe('a consensus run', () => {
     expect(verdict.spread).toBeCloseTo(Math.sqrt(2 / 3), 12)
   })
 
+  it('reads no grade that came late, whoever gave it', async () => {
+    const scenario = await scenarioWith({ one: 'AAB' })
+    const { db, campaign, graders, ids } = scenario
+    const lead = await scenario.permit(scenario.lead, 'lead')
+    await runConsensus(db, lead)
+    const before = await db.selectFrom('verdict').selectAll().execute()
+    await giveGrade(db, campaign, ids.one, graders[0], 'N', { occasion: 'late' })
+    await giveGrade(db, campaign, ids.one, graders[3], 'N', { occasion: 'late' })
+    await runConsensus(db, lead)
+    expect(before).toMatchObject([{ grades: 3 }])
+    expect(await db.selectFrom('verdict').selectAll().execute()).toEqual(before)
+  })
+
   it('measures alpha over the whole campaign as the reference panel has it', async () => {
     // fixtures/agreement/panel.json: 200 items, 8 raters, 960 ratings with gaps; ordinal alpha by three implementations.
     const expected = JSON.parse(readFileSync('fixtures/agreement/panel.json', 'utf8')) as {

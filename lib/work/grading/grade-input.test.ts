@@ -6,6 +6,7 @@ describe('a grade as it arrives', () => {
     expect(GradeInput.parse({ grade: 'A' })).toEqual({
       grade: 'A',
       asked: false,
+      late: false,
       tags: [],
       turned: null,
       remark: null,

@@ -40,6 +40,8 @@ export const GradeInput = z
       .max(7, 'A turn is 1 to 7; leave it out where there is none.')
       .nullish()
       .transform((turned) => turned ?? null),
+    /** Where the candidate has all its looks by now: true keeps the grade beside them instead of refusing it. */
+    late: z.boolean().default(false),
     view: z
       .string()
       .max(40)

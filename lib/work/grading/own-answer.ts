@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { findCandidateToGrade, findStandingAnswer, isJudgementShown } from '@/db/queries/grading'
+import { findCandidateToGrade, findLateAnswer, findStandingAnswer, isJudgementShown } from '@/db/queries/grading'
 import type { DB } from '@/db/schema'
 import type { GradeLetter } from '@/db/schema/grading'
 import { fromJson } from '@/db/schema/values'
@@ -24,7 +24,8 @@ export async function ownAnswer(
   candidateId: number,
 ): Promise<OwnAnswer> {
   if (!(await findCandidateToGrade(db, campaign.id, candidateId))) throw notFound('candidate')
-  const row = await findStandingAnswer(db, candidateId, viewer.id)
+  const row =
+    (await findStandingAnswer(db, candidateId, viewer.id)) ?? (await findLateAnswer(db, candidateId, viewer.id))
   const open = role !== 'grader' || !(await isJudgementShown(db, candidateId, viewer.id))
   if (!row) return { answer: null, open }
   const { uid: id, grade, reason, remark } = row

@@ -7,6 +7,7 @@ import {
   countLiveLeases,
   findCandidateToGrade,
   findGradeByUid,
+  findLateAnswer,
   findStandingAnswer,
   insertGrade,
   isJudgementShown,
@@ -26,6 +27,7 @@ import { keepEstimate } from '@/lib/work/queue/keep-estimates'
 import { askAnsweredBy } from './asked-answer'
 import { consensusDelayMs } from './consensus-due'
 import type { GradeInput } from './grade-input'
+import { recordLate } from './late-answer'
 import { recordRepeat } from './repeat-answer'
 
 export interface GivenGrade {
@@ -46,6 +48,8 @@ export interface RecordedGrade {
   replaced?: string
   /** The id of a look that a lead still waits for: this corrected the earlier grade. To answer it, send it as `asked`. */
   stillAsked?: number
+  /** It came when the candidate had all its looks: kept for the person and the leads, and counted nowhere. */
+  late?: true
 }
 
 /**
@@ -54,6 +58,7 @@ export interface RecordedGrade {
  *
  * A first grade takes a place among the wanted number: the person's lease holds one for them; without a live lease there must be
  * one that neither a grade nor another person's lease has taken, so that a lapsed lease costs nothing as long as there is room.
+ * Where there is none, a grade that asks to be kept late is kept beside, as is each correction of it; others are refused.
  * The answer to an asked look is taken in any case. Of somebody who has not graded the candidate it is the first grade where a place
  * is left, so that the rule and the queue count the same looks; else it takes none.
  * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`,
@@ -73,19 +78,28 @@ export async function recordGrade(
       throw conflict('not-imaged', 'This candidate has no pictures yet, so there is nothing to grade. Try again later.')
     }
     const standing = await findStandingAnswer(transaction, candidateId, viewer.id)
+    const late = standing ? null : await findLateAnswer(transaction, candidateId, viewer.id)
     const delivered = await isDelivered(transaction, candidateId, viewer.id, input)
     if (input.turned !== null) {
       const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
       return recordRepeat(transaction, permit, candidateId, input, { recipeId, delivered })
     }
-    if (standing && delivered) return { row: standing, replaced: null }
+    const known = standing ?? late
+    if (known && delivered) return { row: known, replaced: null }
+    if (delivered) throw taken()
     const ask = await askAnsweredBy(transaction, candidateId, viewer.id, { asked: input.asked, standing })
     const corrected = ask ? null : standing
     if (corrected && saysTheSame(corrected, input)) return { row: corrected, replaced: null }
-    if (corrected) await assertUnswayed(transaction, permit, candidateId)
+    if (late && !ask && saysTheSame(late, input)) return { row: late, replaced: null }
+    if (corrected || (late && !ask)) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
-    if (!corrected && !ask && !candidate.is_calibration) await assertRoom(transaction, candidate, viewer.id, rule)
-    const first = !standing && (!ask || (await roomAt(transaction, candidate, viewer.id, rule)) === 'left')
+    const room = await roomAt(transaction, candidate, viewer.id, rule)
+    if (!corrected && !ask && !candidate.is_calibration && (late || room !== 'left')) {
+      if (!late && !input.late) throw full(room)
+      const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
+      return recordLate(transaction, permit, candidateId, input, { recipeId, corrected: late })
+    }
+    const first = !standing && (!ask || room === 'left')
     const row = await insertGrade(transaction, {
       uid: input.id ?? randomUUID(),
       campaign_id: campaign.id,
@@ -116,6 +130,7 @@ export async function recordGrade(
     grade: shapeGrade(recorded.row),
     ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
     ...('stillAsked' in recorded && recorded.stillAsked ? { stillAsked: recorded.stillAsked } : {}),
+    ...(recorded.row.occasion === 'late' ? { late: true as const } : {}),
   }
 }
 
@@ -147,10 +162,12 @@ async function isDelivered(
 ): Promise<boolean> {
   const known = input.id ? await findGradeByUid(transaction, input.id) : null
   if (known && (known.person_id !== personId || known.candidate_id !== candidateId)) {
-    throw conflict('grade-id-taken', 'This grade id belongs to another grade. Make a new id for each grade.')
+    throw taken()
   }
   return known !== null
 }
+
+const taken = () => conflict('grade-id-taken', 'This grade id belongs to another grade. Make a new id for each grade.')
 
 function saysTheSame(standing: GradeRow, input: GradeInput): boolean {
   return (
@@ -189,26 +206,14 @@ async function roomAt(
   return own === 0 && candidate.grades_given + others >= wanted ? 'held by others' : 'left'
 }
 
-async function assertRoom(
-  transaction: Transaction<DB>,
-  candidate: CandidateToGrade,
-  personId: number,
-  rule: RuleInForce,
-): Promise<void> {
-  const room = await roomAt(transaction, candidate, personId, rule)
-  if (room === 'given') {
-    throw conflict(
-      'candidate-full',
-      `This candidate has the ${wantedOf(candidate, rule)} grades that it wants by now, so yours was not taken. Nothing else is affected; go on with the next.`,
-    )
-  }
-  if (room === 'held by others') {
-    throw conflict(
-      'candidate-full',
-      'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.',
-    )
-  }
-}
+/** Without a number: how many looks a candidate took tells how it stands. */
+const full = (room: 'given' | 'held by others' | 'left') =>
+  conflict(
+    'candidate-full',
+    room === 'held by others'
+      ? 'Your hold on this candidate ran out and other people have it on their benches for its last grades, so yours was not taken. Go on with the next.'
+      : 'This candidate has all the grades that it wants by now, so yours was not taken. Nothing else is affected; go on with the next.',
+  )
 
 function shapeGrade(row: GradeRow): GivenGrade {
   return {

@@ -93,6 +93,17 @@ describe('the agreement report of a campaign', () => {
     expect(report.people[1].consistency).toBeNull()
   })
 
+  it('counts no grade that came late in agreement, letters or self-consistency', async () => {
+    const scenario = await reportScenario(['AA', 'NN', 'AN'])
+    const before = await computedReport(scenario)
+    const { db, campaign, graders, ids } = scenario
+    await giveGrade(db, campaign, ids[2], graders[0], 'N', { occasion: 'late' })
+    const after = await computedReport(scenario)
+    expect(after.pairs).toEqual(before.pairs)
+    expect(after.people[0].letters).toEqual(before.people[0].letters)
+    expect(after.people[0].consistency).toBeNull()
+  })
+
   it('judges with the grades that count, and measures who is left out against the others', async () => {
     const letters = [...Array<string>(10).fill('AAAN'), ...Array<string>(30).fill('NNNA')]
     const scenario = await reportScenario(letters)

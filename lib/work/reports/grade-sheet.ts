@@ -113,6 +113,8 @@ class GrowingSheet {
       this.repeatPlace.set(row.id, at)
       return
     }
+    // A look like others for pace and hours, counted in nothing else.
+    if (row.occasion === 'late') return
     const former = this.newest.get(candidate)
     if (former !== undefined) columns.counts[former] = 0
     columns.counts[at] = 1
