@@ -3,7 +3,8 @@ import { hasColumn, inOneStep } from './in-one-step'
 
 /**
  * What the tables of candidates and of the catalogue sort and filter by, a row a candidate, kept by triggers with every change
- * that moves it, so that 100,000 rows are walked by one index or read as one narrow table; and the views that people save.
+ * that moves it, so that 100,000 rows are walked by one index or read as one narrow table; who has judged which candidate; and the
+ * views that people save.
  */
 
 const flushed = `key || case when digits = '' then '' else printf('%02d', length(ltrim(digits, '0'))) || ltrim(digits, '0') end`
@@ -133,6 +134,10 @@ const LISTING = [
     (column) =>
       `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id) where entered_at is not null`,
   ),
+  ...['ra_deg', 'dec_deg', 'lens_redshift', 'source_redshift', 'designation', 'probability'].map(
+    (column) =>
+      `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id) where entered_at is not null`,
+  ),
   'create index listing_as_name_key on listing (campaign_id, name_key, candidate_id) where entered_at is not null',
   // Few grades have one, and people search for what is in them.
   'create index grade_remark on grade (campaign_id, candidate_id, person_id, id, occasion, remark) where remark is not null',
@@ -174,6 +179,34 @@ const LISTING = [
   end`,
 ]
 
+/** What `isOwnJudgement` of db/queries/grading.ts says of a person and a candidate. */
+const judges = (person: string, candidate: string): string => `exists (select 1 from grade own
+    where own.candidate_id = ${candidate} and own.person_id = ${person} and own.grade <> 'U'
+      and not exists (select 1 from grade newer where newer.replaces = own.id))
+  and not exists (select 1 from asked_look ask where ask.candidate_id = ${candidate} and ask.person_id = ${person}
+    and ask.grade_id is null and ask.withdrawn_at is null)`
+
+const judgedAgain = `
+  delete from judged where campaign_id = new.campaign_id and person_id = new.person_id and candidate_id = new.candidate_id;
+  insert into judged select new.campaign_id, new.person_id, new.candidate_id
+    where ${judges('new.person_id', 'new.candidate_id')};`
+
+const JUDGED = [
+  // Who may see what was made of which candidate, because they have judged it themselves.
+  `create table judged (
+    campaign_id integer not null references campaign (id),
+    person_id integer not null references person (id),
+    candidate_id integer not null references candidate (id) on delete cascade,
+    primary key (campaign_id, person_id, candidate_id)
+  ) strict, without rowid`,
+  'create index judged_candidate on judged (candidate_id)',
+  `insert into judged select distinct g.campaign_id, g.person_id, g.candidate_id from grade g
+    where ${judges('g.person_id', 'g.candidate_id')}`,
+  `create trigger grade_judges after insert on grade begin ${judgedAgain} end`,
+  `create trigger asked_look_judges after insert on asked_look begin ${judgedAgain} end`,
+  `create trigger asked_look_judges_again after update of grade_id, withdrawn_at on asked_look begin ${judgedAgain} end`,
+]
+
 const VIEWS = [
   // A person's own; a lead may share theirs with the campaign.
   `create table saved_view (
@@ -192,6 +225,9 @@ const VIEWS = [
 ]
 
 const TRIGGERS = [
+  'asked_look_judges_again',
+  'asked_look_judges',
+  'grade_judges',
   'entry_listed',
   'designation_listed',
   'left_out_listed',
@@ -204,7 +240,7 @@ const TRIGGERS = [
 
 export async function up(db: Kysely<unknown>): Promise<void> {
   if (await hasColumn(db, 'saved_view', 'id')) return
-  await inOneStep(db, [...LISTING, ...VIEWS])
+  await inOneStep(db, [...LISTING, ...JUDGED, ...VIEWS])
 }
 
 export async function down(db: Kysely<unknown>): Promise<void> {
@@ -213,6 +249,7 @@ export async function down(db: Kysely<unknown>): Promise<void> {
     ...TRIGGERS.map((trigger) => `drop trigger ${trigger}`),
     'drop index grade_remark',
     'drop table saved_view',
+    'drop table judged',
     'drop table listing',
   ])
 }

@@ -56,7 +56,7 @@ export function CandidatesScreen({ slug, role, table, views }: CandidatesScreenP
         ) : null}
         <VisualGradeCaution />
       </header>
-      <div className="flex min-h-[76dvh] flex-col md:min-h-0 md:flex-1">
+      <div className="flex flex-col md:min-h-0 md:flex-1">
         <DataTable
           label="Candidates"
           noun="candidates"

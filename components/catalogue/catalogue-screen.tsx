@@ -53,7 +53,7 @@ export function CatalogueScreen({ slug, catalogue, classRule, next, views }: Cat
       {catalogue.mayExport || ownOnly ? null : (
         <Notice>Files of the catalogue are downloaded by leads and viewers; ask one of them for it.</Notice>
       )}
-      <div className="flex min-h-[76dvh] flex-col md:min-h-0 md:flex-1">
+      <div className="flex flex-col md:min-h-0 md:flex-1">
         <CatalogueTable slug={slug} catalogue={catalogue} views={views} />
       </div>
     </div>

@@ -148,7 +148,7 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
         aria-label={label}
         aria-busy={isPending}
         tabIndex={0}
-        className="relative min-h-40 flex-1 overflow-auto rounded-tray border border-line"
+        className="relative min-h-40 flex-1 overflow-auto max-md:max-h-[76dvh] rounded-tray border border-line"
       >
         <table className="w-full border-separate border-spacing-0 text-small">
           <thead className="sticky top-0 z-20 bg-page">

@@ -27,11 +27,11 @@ export function FilterPanel<Row>({ columns, filters, onChange, positions, found,
       onKeyDown={(event) => event.key === 'Escape' && onClose()}
       className="flex flex-col gap-x-5 gap-y-4 rounded-tray border border-line bg-raise/40 p-3 md:max-h-[50dvh] md:flex-row md:overflow-y-auto"
     >
-      <div className="grid flex-1 grid-cols-2 content-start gap-x-3 gap-y-2.5 md:grid-cols-[repeat(auto-fill,minmax(9rem,1fr))]">
+      <div className="grid flex-1 grid-cols-2 content-start gap-x-3 gap-y-2.5 md:grid-cols-[repeat(auto-fill,minmax(8.25rem,1fr))]">
         {fields.map((column) => (
           <div
             key={column.id}
-            className={typeof column.filter === 'object' && column.filter.length > 2 ? 'col-span-2' : ''}
+            className={typeof column.filter === 'object' && column.filter.length > 3 ? 'col-span-2' : ''}
           >
             <FilterField column={column} value={filters[column.id] ?? ''} onChange={onChange} />
           </div>
@@ -66,7 +66,7 @@ function RegionFields<Row>({
     />
   )
   return (
-    <fieldset className="flex min-w-0 shrink-0 flex-wrap gap-3 md:w-[24rem] md:flex-nowrap md:border-l md:border-line md:pl-5">
+    <fieldset className="flex min-w-0 shrink-0 flex-wrap gap-3 md:w-[22rem] md:flex-nowrap md:border-l md:border-line md:pl-5">
       <legend className="sr-only">Region of the sky</legend>
       <div className="grid min-w-0 flex-1 grid-cols-2 content-start gap-x-3 gap-y-2.5">
         <div className="col-span-2">{field('near', 'Round the position, ICRS', '150.1 2.2 or 10:00:24 +02:12:00')}</div>
@@ -74,7 +74,9 @@ function RegionFields<Row>({
         {(['ra', 'dec'] as const).map((axis) => {
           const column = columns.find(({ id }) => id === axis)
           return column ? (
-            <FilterField key={axis} column={column} value={filters[axis] ?? ''} onChange={onChange} />
+            <div key={axis} className="md:col-span-2">
+              <FilterField column={column} value={filters[axis] ?? ''} onChange={onChange} />
+            </div>
           ) : null
         })}
       </div>

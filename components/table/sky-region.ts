@@ -83,5 +83,5 @@ export function parseRadius(text: string): number | null {
 /** `30 arcsec`, `5 arcmin`, `0.5 deg`: in the unit that makes a small number. */
 export function radiusInWords(radiusArcsec: number): string {
   const [size, unit] = radiusArcsec < 120 ? [1, 'arcsec'] : radiusArcsec < 7200 ? [60, 'arcmin'] : [3600, 'deg']
-  return `${Number((radiusArcsec / size).toPrecision(4))} ${unit}`
+  return `${Number((radiusArcsec / size).toPrecision(3))} ${unit}`
 }

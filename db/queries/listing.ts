@@ -2,7 +2,6 @@ import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateScope } from './catalogue'
 import { among } from './by-ids'
-import { isOwnJudgement } from './grading'
 import { isWithin, meets, type ColumnCondition, type SkyCone } from './list-conditions'
 import { listColumns, type ListColumnName } from './list-columns'
 
@@ -32,8 +31,8 @@ export interface ListOrder {
 /** Whether the reader may see what was judged of the candidate `l`. */
 export function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBool> {
   if (judgedBy === null) return sql<SqlBool>`true`
-  return sql<SqlBool>`l.candidate_id in (select own.candidate_id from grade own indexed by grade_person
-    where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and ${isOwnJudgement(judgedBy)})`
+  return sql<SqlBool>`l.candidate_id in (select judged.candidate_id from judged
+    where judged.campaign_id = ${campaignId} and judged.person_id = ${judgedBy})`
 }
 
 const isFiltered = ({
@@ -60,29 +59,32 @@ function filtered(db: Kysely<DB>, scope: CandidateScope, table: ListedTable, fil
   if (stages.length > 0) anyState.push(sql`(l.stage in ${among(stages)} and ${revealed})`)
   if (withheld) anyState.push(sql`not ${revealed}`)
   if (notSentOn) anyState.push(sql`(l.first_pass = 'dropped' and l.is_stamp = 0)`)
-  return db
-    .selectFrom('listing as l')
-    .where('l.campaign_id', '=', scope.campaignId)
-    .$if(!scope.withCalibration || table === 'catalogue', (query) => query.where('l.is_stamp', '=', 0))
-    .$if(table === 'catalogue', (query) => query.where('l.entered_at', 'is not', null).where(revealed))
-    .$if(anyState.length > 0, (query) => query.where(sql<SqlBool>`(${sql.join(anyState, sql` or `)})`))
-    .$if(filter.among !== undefined, (query) => query.where(sql<SqlBool>`l.candidate_id in ${among(filter.among!)}`))
-    .$if(filter.without !== undefined, (query) =>
-      query.where(sql<SqlBool>`l.candidate_id not in ${among(filter.without!)}`),
-    )
-    .$if(filter.notAmong !== undefined, (query) =>
-      query
-        .where(sql<SqlBool>`l.candidate_id not in ${among(filter.notAmong!)}`)
-        .$if(scope.judgedBy !== null, (one) => one.where(revealed).where('l.stage', '>', 0)),
-    )
-    .$if(cone !== undefined, (query) => query.where(isWithin(scope.campaignId, cone!)))
-    .$call((query) =>
-      columns.reduce((all, { column, condition }) => {
-        const { told = null, ...of } = known[column] ?? {}
-        if (!('value' in of)) return all.where(sql<SqlBool>`false`)
-        return all.where(meets(of, condition)).$if(told !== null, (one) => one.where(revealed).where(told!))
-      }, query),
-    )
+  return (
+    db
+      .selectFrom('listing as l')
+      .where('l.campaign_id', '=', scope.campaignId)
+      .$if(!scope.withCalibration && table === 'candidates', (query) => query.where('l.is_stamp', '=', 0))
+      // No calibration stamp ever has an entry.
+      .$if(table === 'catalogue', (query) => query.where('l.entered_at', 'is not', null).where(revealed))
+      .$if(anyState.length > 0, (query) => query.where(sql<SqlBool>`(${sql.join(anyState, sql` or `)})`))
+      .$if(filter.among !== undefined, (query) => query.where(sql<SqlBool>`l.candidate_id in ${among(filter.among!)}`))
+      .$if(filter.without !== undefined, (query) =>
+        query.where(sql<SqlBool>`l.candidate_id not in ${among(filter.without!)}`),
+      )
+      .$if(filter.notAmong !== undefined, (query) =>
+        query
+          .where(sql<SqlBool>`l.candidate_id not in ${among(filter.notAmong!)}`)
+          .$if(scope.judgedBy !== null, (one) => one.where(revealed).where('l.stage', '>', 0)),
+      )
+      .$if(cone !== undefined, (query) => query.where(isWithin(scope.campaignId, cone!)))
+      .$call((query) =>
+        columns.reduce((all, { column, condition }) => {
+          const { told = null, ...of } = known[column] ?? {}
+          if (!('value' in of)) return all.where(sql<SqlBool>`false`)
+          return all.where(meets(of, condition)).$if(told !== null, (one) => one.where(revealed).where(told!))
+        }, query),
+      )
+  )
 }
 
 /**

@@ -32,7 +32,7 @@ import type {
   ReferenceObjectTable,
 } from './matching'
 import type { MeasurementTable } from './measuring'
-import type { ListingTable, SavedViewTable } from './listing'
+import type { JudgedTable, ListingTable, SavedViewTable } from './listing'
 import type { InvitationTable, PersonTable } from './people'
 import type {
   ReleaseAccessTable,
@@ -92,6 +92,7 @@ export interface DB {
   release_file: ReleaseFileTable
   release_access: ReleaseAccessTable
   listing: ListingTable
+  judged: JudgedTable
   saved_view: SavedViewTable
   job: JobTable
   mail: MailTable

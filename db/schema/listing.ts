@@ -44,6 +44,13 @@ export interface ListingTable {
   entry_tags: string | null
 }
 
+/** A grader who has judged a candidate, as `isOwnJudgement` has it; kept by triggers. */
+export interface JudgedTable {
+  campaign_id: number
+  person_id: number
+  candidate_id: number
+}
+
 /** A table as somebody has made it: columns, order, filters. */
 export interface SavedViewTable {
   id: Generated<number>

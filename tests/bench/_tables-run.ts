@@ -28,7 +28,7 @@ import type { Viewer } from '@/lib/work/people/viewer'
 
 const GRADERS = 25
 const LOOKS = 5
-const REPEATS = 8
+const REPEATS = 5
 const NOW = '2026-01-01T00:00:00.000Z'
 const PAGE = { page: 0, pageSize: 100 }
 

@@ -1,5 +1,6 @@
 import { sql } from 'kysely'
 import { afterEach, beforeEach, expect, it } from 'vitest'
+import { listJudgedAmong } from '@/db/queries/grading'
 import { insertLeftOut } from '@/db/queries/left-out'
 import { insertRuling } from '@/db/queries/rulings'
 import { up, down } from '@/migrations/015-listing'
@@ -16,7 +17,8 @@ beforeEach(async () => {
 afterEach(() => scenario.db.destroy())
 
 const NOW = '2026-03-01T00:00:00.000Z'
-const listing = async () => (await sql<object>`select * from listing order by candidate_id`.execute(scenario.db)).rows
+const rowsOf = async (table: string) => (await sql<object>`select * from ${sql.table(table)}`.execute(scenario.db)).rows
+const listing = async () => [...(await rowsOf('listing')), ...(await rowsOf('judged'))]
 
 /** A history in which everything that moves a row happens, in a random order. */
 async function live(seed: number): Promise<void> {
@@ -66,6 +68,30 @@ async function live(seed: number): Promise<void> {
           NOW,
         )
       })
+    },
+    async () => {
+      const [id, person] = [some(), graders[random.integer(0, 3)].id]
+      const open = { grade_id: null, withdrawn_at: null }
+      await db
+        .updateTable('asked_look')
+        .set({ withdrawn_at: NOW })
+        .where('candidate_id', '=', id)
+        .where('person_id', '=', person)
+        .where('withdrawn_at', 'is', null)
+        .execute()
+      if (random.chance(0.3)) return
+      const ask = {
+        campaign_id: campaign.id,
+        candidate_id: id,
+        person_id: person,
+        asked_by: lead.id,
+        note: null,
+        asked_at: NOW,
+      }
+      await db
+        .insertInto('asked_look')
+        .values({ ...ask, ...open })
+        .execute()
     },
     async () =>
       insertLeftOut(db, {
@@ -136,6 +162,19 @@ it.each([4, 6, 8])('has of each entry what the catalogue says of it (seed %d)', 
       enteredAt,
     })),
   )
+})
+
+it.each([9, 10])('knows of each grader what their own judgement opens to them (seed %d)', async (seed) => {
+  await live(seed)
+  const { db, campaign, graders } = scenario
+  const all = await db.selectFrom('candidate').select('id').execute()
+  for (const { id } of graders) {
+    const kept = await db.selectFrom('judged').select('candidate_id as at').where('person_id', '=', id).execute()
+    const ids = all.map((candidate) => candidate.id)
+    const judged = await listJudgedAmong(db, campaign.id, id, ids)
+    expect(judged.length).toBeGreaterThan(0)
+    expect(kept.map(({ at }) => at).toSorted()).toEqual(judged.toSorted())
+  }
 })
 
 it('is made once by two migrations in a row, and taken back once', async () => {
