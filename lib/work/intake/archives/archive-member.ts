@@ -32,6 +32,11 @@ export const unsafe = (name: string, why: string): Refusal => ({
   reason: `The archive holds '${name}', ${why}. Nothing of it was taken.`,
 })
 
+export const encrypted = (name: string): Refusal => ({
+  fault: 'encrypted-archive',
+  reason: `'${name}' in the archive is encrypted. Nothing of it was taken: send it without a password.`,
+})
+
 /** The refusal of the whole archive for a name that points out of it; names are only looked at, never opened as paths. */
 export function unsafeName(raw: string): Refusal | null {
   const name = raw.replaceAll('\\', '/')

@@ -2,7 +2,7 @@ import { createReadStream } from 'node:fs'
 import { open, type FileHandle } from 'node:fs/promises'
 import { crc32, createInflateRaw } from 'node:zlib'
 import { overLimit, type ArchiveLimits } from './archive-limits'
-import { unsafeName, type ArchiveMember, type ArchiveReader, type LostMember } from './archive-member'
+import { encrypted, unsafeName, type ArchiveMember, type ArchiveReader, type LostMember } from './archive-member'
 
 const LOCAL_HEADER = 0x04034b50
 const HEADER_BYTES = 30
@@ -14,6 +14,7 @@ interface LocalMember {
   packedBytes: number
   bytes: number
   dataStart: number
+  isEncrypted: boolean
 }
 
 /**
@@ -28,7 +29,10 @@ export function cutZipReader(path: string, fileBytes: number, limits: ArchiveLim
       for await (const member of localMembers(path, fileBytes)) {
         bytes += member.bytes
         if (!member.name.endsWith('/')) members++
-        const refusal = unsafeName(member.name) ?? overLimit(limits, { members, bytes, packedBytes: fileBytes })
+        const refusal =
+          unsafeName(member.name) ??
+          (member.isEncrypted ? encrypted(member.name) : null) ??
+          overLimit(limits, { members, bytes, packedBytes: fileBytes })
         if (refusal) return { refusal, members }
       }
       return { refusal: null, members }
@@ -70,14 +74,22 @@ async function readHeader(file: FileHandle, at: number): Promise<LocalMember | n
   if (bytesRead < HEADER_BYTES || head.readUInt32LE(0) !== LOCAL_HEADER) return null
   const flags = head.readUInt16LE(6)
   const method = head.readUInt16LE(8)
-  const isFollowable = (flags & 0b1001) === 0 && (method === 0 || method === 8)
+  const isFollowable = (flags & 0b1000) === 0 && (method === 0 || method === 8)
   const nameBytes = head.readUInt16LE(26)
   const name = Buffer.alloc(nameBytes)
   const read = await file.read(name, 0, nameBytes, at + HEADER_BYTES)
   const [packedBytes, bytes] = [head.readUInt32LE(18), head.readUInt32LE(22)]
   if (!isFollowable || read.bytesRead < nameBytes || packedBytes === 0xffffffff) return null
   const dataStart = at + HEADER_BYTES + nameBytes + head.readUInt16LE(28)
-  return { name: name.toString('utf8'), method, crc: head.readUInt32LE(14), packedBytes, bytes, dataStart }
+  return {
+    name: name.toString('utf8'),
+    method,
+    crc: head.readUInt32LE(14),
+    packedBytes,
+    bytes,
+    dataStart,
+    isEncrypted: (flags & 1) === 1,
+  }
 }
 
 async function* bytesOf(path: string, member: LocalMember): AsyncGenerator<Uint8Array> {

@@ -3,6 +3,7 @@ import yauzl from 'yauzl'
 import { overLimit, type ArchiveLimits } from './archive-limits'
 import { isManifestName } from '../file-name'
 import {
+  encrypted,
   unsafe,
   unsafeName,
   type ArchiveMember,
@@ -41,14 +42,15 @@ export function zipReader(path: string, packedBytes: number, limits: ArchiveLimi
   }
 }
 
-const open = (path: string) =>
-  yauzl.openPromise(path, { decodeStrings: false, validateEntrySizes: true, autoClose: false })
+const open = (path: string, validateEntrySizes: boolean) =>
+  yauzl.openPromise(path, { decodeStrings: false, validateEntrySizes, autoClose: false })
 
 const nameOf = (entry: yauzl.Entry): string =>
   yauzl.getFileNameLowLevel(entry.generalPurposeBitFlag, entry.fileNameRaw, entry.extraFields, true)
 
 async function scanDirectory(path: string, packedBytes: number, limits: ArchiveLimits): Promise<ArchiveScan> {
-  const zip = await open(path)
+  // Sizes are compared below: yauzl would call a member of wrong sizes damaged before it could be told that it is encrypted.
+  const zip = await open(path, false)
   let members = 0
   let bytes = 0
   try {
@@ -61,9 +63,12 @@ async function scanDirectory(path: string, packedBytes: number, limits: ArchiveL
       const refusal =
         unsafeName(name) ??
         oddType(entry, name) ??
-        encrypted(entry, name) ??
+        (entry.isEncrypted() ? encrypted(name) : null) ??
         overLimit(limits, { members, bytes, packedBytes })
       if (refusal) return { refusal, members }
+      if (entry.compressionMethod === STORED && entry.compressedSize !== entry.uncompressedSize) {
+        throw new Error(`The sizes of '${name}' do not agree`)
+      }
     }
     return { refusal: null, members }
   } finally {
@@ -77,17 +82,11 @@ function oddType(entry: yauzl.Entry, name: string) {
   return type === undefined ? null : unsafe(name, `which is ${type} and no file`)
 }
 
-function encrypted(entry: yauzl.Entry, name: string) {
-  if (!entry.isEncrypted()) return null
-  const reason = `'${name}' in the archive is encrypted. Nothing of it was taken: send it without a password.`
-  return { fault: 'encrypted-archive', reason }
-}
-
 async function* zipMembers(
   path: string,
   isWanted: (name: string) => boolean,
 ): AsyncGenerator<ArchiveMember | LostMember, void, void> {
-  const zip = await open(path)
+  const zip = await open(path, true)
   try {
     for await (const entry of zip.eachEntry()) {
       const name = nameOf(entry).replaceAll('\\', '/')

@@ -133,6 +133,18 @@ describe('an archive that is refused', () => {
       async () => packZip([{ ...cutout('a.fits', 4), encrypted: true }]),
       /'a\.fits' in the archive is encrypted/,
     ],
+    [
+      'encrypted-archive',
+      'is encrypted, and its sizes do not fit that',
+      async () => packZip([...threeBands, { ...cutout('a.fits', 4), encrypted: true, method: 0 }]),
+      /'a\.fits' in the archive is encrypted/,
+    ],
+    [
+      'encrypted-archive',
+      'is encrypted and cut off',
+      async () => packZip([{ ...cutout('a.fits', 4), encrypted: true }, ...threeBands]).subarray(0, -60),
+      /'a\.fits' in the archive is encrypted/,
+    ],
     ['unsafe-archive', 'is a tar with ../', () => packTar([...threeBands, cutout('../x.fits', 4)]), /leads out of it/],
     ['unsafe-archive', 'is a tar with an absolute name', () => packTar([cutout('/etc/x.fits', 4)]), /absolute path/],
     [
@@ -152,6 +164,12 @@ describe('an archive that is refused', () => {
     ['empty-archive', 'is a zip of nothing', async () => packZip([]), /holds not one/],
     ['empty-archive', 'is a tar.gz of nothing', () => packTar([], { gzip: true }), /holds not one/],
     ['empty-archive', 'has hidden files only', async () => packZip([cutout('__MACOSX/._x', 1)]), /only hidden ones/],
+    [
+      'damaged-archive',
+      'has a first file whose sizes do not agree',
+      async () => packZip([{ ...cutout('a.fits', 4), method: 0 }]),
+      /'a\.fits' is lost/,
+    ],
     [
       'damaged-archive',
       'is cut off in its first file',
