@@ -50,7 +50,7 @@ export function DuplicateCase({
         </h2>
         {widestArcsec > radiusArcsec ? (
           <p className="text-note text-mute">
-            A chain: some are further apart than {arcsec(radiusArcsec)} and hang together only through others.
+            A chain: some are further apart than {radiusArcsec}″ and hang together only through others.
           </p>
         ) : null}
       </header>
@@ -93,7 +93,8 @@ export function DuplicateCase({
         <section className="flex flex-col gap-2">
           <h3 className="text-small font-semibold">Different objects</h3>
           <p className="text-note text-mute">
-            All {members.length} stay as they are, and are proposed no more until somebody asks for it below.
+            {members.length === 2 ? 'Both' : `All ${members.length}`} stay as they are, and are proposed no more until
+            somebody asks for it below.
           </p>
           <ReasonForm
             label="Different"

@@ -13,7 +13,6 @@ import type { DuplicatesPage } from '@/lib/work/matching/duplicates-page'
 import { DecidedList } from './decided-list'
 import { DuplicateCase } from './duplicate-case'
 import { DUPLICATE_KEYS } from './duplicate-keys'
-import { arcsec } from './known-label'
 import { useDuplicateKeys } from './use-duplicate-keys'
 
 export interface DuplicatesScreenProps {
@@ -71,7 +70,7 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
             {total > 0 ? `${counted(total, 'group')} that may be one object each` : 'No candidate is proposed twice'}
           </h1>
           <p className="text-small text-mute">
-            Candidates within {arcsec(radiusArcsec)} of each other by great-circle distance.
+            Candidates within {radiusArcsec}″ of each other by great-circle distance.
             {due > 0 ? ` ${counted(due, 'candidate')} still ${due === 1 ? 'waits' : 'wait'} to be matched.` : ''}
           </p>
         </div>

@@ -33,11 +33,13 @@ export function KnownScreen({ slug, isLead, first }: { slug: string; isLead: boo
     <div className="mx-auto flex max-w-6xl flex-col gap-7 px-4 py-6 md:px-8 md:py-8">
       <PageHead
         title={
-          inForce.length === 0
+          lists.length === 0
             ? 'No list of known objects yet'
-            : known === 0
-              ? 'No candidate is a known object'
-              : `${counted(known, 'candidate')} ${known === 1 ? 'is a known object' : 'are known objects'}`
+            : inForce.length === 0
+              ? 'No list of known objects is in force'
+              : known === 0
+                ? 'No candidate is a known object'
+                : `${counted(known, 'candidate')} ${known === 1 ? 'is a known object' : 'are known objects'}`
         }
         lead={
           <>

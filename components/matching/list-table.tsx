@@ -1,7 +1,6 @@
 import Link from 'next/link'
 import { day } from '@/components/campaigns/in-words'
 import type { KnownList } from '@/lib/work/matching/known-page'
-import { arcsec } from './known-label'
 
 const STATES: Record<KnownList['state'], string> = {
   draft: 'columns to be chosen',
@@ -41,7 +40,7 @@ const CELL = 'border-b border-line px-3 py-2.5 align-top first:pl-0'
 export function ListTable({ slug, lists, isLead }: { slug: string; lists: readonly KnownList[]; isLead: boolean }) {
   return (
     <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Lists of known objects">
-      <table className="w-full min-w-[46rem] border-collapse text-small">
+      <table className="w-full min-w-[52rem] border-collapse text-small">
         <thead>
           <tr>
             <th scope="col" className={HEAD}>
@@ -67,7 +66,7 @@ export function ListTable({ slug, lists, isLead }: { slug: string; lists: readon
         <tbody>
           {lists.map((list) => (
             <tr key={list.id} className={list.state === 'retired' ? 'text-mute' : ''}>
-              <th scope="row" className={`${CELL} text-left font-semibold`}>
+              <th scope="row" className={`${CELL} min-w-44 text-left font-semibold`}>
                 {isLead ? (
                   <Link
                     href={`/campaigns/${slug}/known/${list.id}`}
@@ -82,7 +81,7 @@ export function ListTable({ slug, lists, isLead }: { slug: string; lists: readon
                   {list.fileName}
                 </span>
               </th>
-              <td className={CELL}>
+              <td className={`${CELL} min-w-52`}>
                 {list.source || <span className="text-mute">not told yet</span>}
                 <span className="block text-note text-mute">
                   {list.listDate ? `${list.listDate} · ` : ''}sent {day(list.uploadedAt)}
@@ -94,11 +93,11 @@ export function ListTable({ slug, lists, isLead }: { slug: string; lists: readon
                   <span className="block text-note text-mute">{list.positions.toLocaleString('en')} placed</span>
                 ) : null}
               </td>
-              <td className={`figures ${CELL} text-right`}>{arcsec(list.radiusArcsec)}</td>
+              <td className={`figures ${CELL} text-right`}>{list.radiusArcsec}″</td>
               <td className={`figures ${CELL} text-right`}>
                 {list.state === 'ready' ? list.matched.toLocaleString('en') : '–'}
               </td>
-              <td className={CELL}>
+              <td className={`${CELL} max-w-80`}>
                 <ListState state={list.state} />
                 <span role={workOf(list) ? 'status' : undefined} className="block text-note text-mute">
                   {workOf(list) ??

@@ -2,6 +2,7 @@
 // A word after it chooses, a number a smaller size where a benchmark takes one: npm run bench -- intake 300
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
+import { benchCone } from './bench-cone'
 import { benchConsensus } from './bench-consensus'
 import { benchImaging } from './bench-imaging'
 import { benchImagingScale } from './bench-imaging-scale'
@@ -21,6 +22,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   intake: benchIntake,
   'lens-light': () => benchLensLight(),
   match: benchMatch,
+  cone: benchCone,
   votable: benchVotable,
   lens: benchLens,
   measuring: benchMeasuring,
