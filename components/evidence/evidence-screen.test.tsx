@@ -3,6 +3,7 @@ import userEvent from '@testing-library/user-event'
 import { describe, expect, it, vi } from 'vitest'
 import type { FormState } from '@/components/ui/form-state'
 import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
+import { LateGrades } from './grade-list'
 import { EvidenceScreen } from './evidence-screen'
 import { arithmeticInWords, thresholdsInWords } from './verdict-arithmetic'
 
@@ -56,6 +57,7 @@ const JUDGEMENT: Judgement = {
   sourceRedshift: null,
   votes: { A: 1, B: 2, C: 0, N: 0, U: 0 },
   grades: GRADES,
+  late: [],
   verdict: VERDICT,
   why: null,
   rulings: [],
@@ -197,4 +199,11 @@ describe('the sum of a verdict in words', () => {
     expect(arithmeticInWords(none, [])).toBe('0 grades (and 2 who could not judge, which is no number).')
     expect(thresholdsInWords(none)).toContain('version 2')
   })
+})
+
+it('shows what came late apart from the grades that count', () => {
+  const late = { ...GRADES[0], id: 99, by: 'knot', occasion: 'late' as const }
+  render(<LateGrades grades={[late]} />)
+  expect(screen.getByText(/Kept, and counted nowhere/)).toBeInTheDocument()
+  expect(screen.getByText('knot')).toBeInTheDocument()
 })

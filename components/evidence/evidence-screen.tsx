@@ -19,7 +19,7 @@ import { StatePill } from '@/components/ui/state-pill'
 import { VoteStrip } from '@/components/ui/vote-strip'
 import type { CandidateEvidence, Judgement } from '@/lib/work/rulings/candidate-evidence'
 import { CandidateFacts } from './candidate-facts'
-import { GradeList, gradesInWords } from './grade-list'
+import { GradeList, gradesInWords, LateGrades } from './grade-list'
 import { Position } from './position'
 import { RulingForm } from './ruling-form'
 import { SendOn } from './send-on'
@@ -204,6 +204,7 @@ function JudgementColumn({ judgement, talk }: { judgement: Judgement; talk: Talk
       <Section title={gradesInWords(judgement.grades)}>
         <VoteStrip votes={judgement.votes} />
         <GradeList grades={judgement.grades} />
+        <LateGrades grades={judgement.late} />
         {talk ? <AskedLooks talk={talk} /> : null}
       </Section>
       {judgement.why ? null : (

@@ -25,6 +25,19 @@ export function gradesInWords(grades: readonly Pick<EvidenceGrade, 'grade'>[]): 
   return aside > 0 ? `${given}, ${aside} cannot judge` : given
 }
 
+/** Grades that came too late to count. */
+export function LateGrades({ grades }: { grades: EvidenceGrade[] }) {
+  if (grades.length === 0) return null
+  return (
+    <div className="mt-3">
+      <p className="mb-1 text-small text-mute">
+        Came when the candidate had all its looks, as after hours without a network. Kept, and counted nowhere:
+      </p>
+      <GradeList grades={grades} />
+    </div>
+  )
+}
+
 /** Every grade that counts: who, how long they looked, what they saw and what they said. */
 export function GradeList({ grades }: { grades: EvidenceGrade[] }) {
   if (grades.length === 0) return <p className="text-small text-mute">Nobody has graded it yet.</p>

@@ -9,6 +9,7 @@ const record = (change: Partial<GraderRecord> = {}): GraderRecord => ({
   person: { id: 4, name: 'curlew' },
   grades: LETTERS.map((letter, k) => ({ letter, n: 10 * k })),
   looks: 100,
+  late: 0,
   days: [{ day: '2026-03-02', n: 60 }],
   medianSeconds: 6.25,
   consistency: selfConsistency([
@@ -57,4 +58,9 @@ it('says what is still to come where there is nothing', () => {
   expect(screen.getByText('Nothing graded yet')).toBeInTheDocument()
   expect(screen.getByText('No candidate has come back to you yet.')).toBeInTheDocument()
   expect(screen.getByText('The first results come with a few more looks.')).toBeInTheDocument()
+})
+
+it('tells of looks that came late apart from those that count', () => {
+  render(<RecordView slug="north" record={record({ late: 2 })} own graders={null} />)
+  expect(screen.getByText(/2 more looks came when their candidates had all that they want/)).toBeInTheDocument()
 })

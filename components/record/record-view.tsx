@@ -20,7 +20,7 @@ export function RecordView({
   /** For leads: everybody who grades. */
   graders: { id: number; name: string; ended: 0 | 1 }[] | null
 }) {
-  const { looks, days, medianSeconds, consistency, calibration, practice } = record
+  const { looks, late, days, medianSeconds, consistency, calibration, practice } = record
   const whose = own ? 'you' : record.person.name
   const home = `/campaigns/${slug}`
   return (
@@ -37,7 +37,7 @@ export function RecordView({
             : 'Answers in practice are the grader’s own and are not shown.'
         }
       />
-      {looks === 0 ? (
+      {looks + late === 0 ? (
         <EmptyState title={own ? 'Nothing graded yet' : `Nothing graded by ${record.person.name} yet`}>
           <p>Counts, pace and calibration results gather here with the first looks.</p>
           {own ? (
@@ -50,6 +50,12 @@ export function RecordView({
         <>
           <FormSection title="Grades" about="First grades as they stand.">
             <GradeBars grades={record.grades} />
+            {late > 0 ? (
+              <p className="mt-3 text-small text-mute">
+                {counted(late, 'more look')} came when {late === 1 ? 'its candidate' : 'their candidates'} had all that{' '}
+                {late === 1 ? 'it wants' : 'they want'}. Kept, and counted in no verdict.
+              </p>
+            ) : null}
           </FormSection>
           <FormSection title="Pace" about="Of the newest 500 looks. Neither quick nor slow is good in itself.">
             <p>

@@ -70,6 +70,7 @@ function judgement(more: Partial<Judgement> = {}): Judgement {
         givenAt: AT,
       },
     ],
+    late: [],
     verdict: {
       id: 9,
       outcome: 'split',

@@ -8,6 +8,7 @@ import {
   listSeconds,
   type GraderRow,
 } from '@/db/queries/grader-record'
+import { countLateLooks } from '@/db/queries/late-grades'
 import { countPracticeAnswers } from '@/db/queries/practice'
 import { listRepeatPairs } from '@/db/queries/repeats'
 import type { DB } from '@/db/schema'
@@ -22,6 +23,8 @@ export interface GraderRecord {
   /** First grades that stand, in the order A, B, C, N, U. */
   grades: { letter: GradeLetter; n: number }[]
   looks: number
+  /** Looks that came when their candidate had all it wants: kept, and counted nowhere. */
+  late: number
   /** UTC days with looks, the newest first. */
   days: { day: string; n: number }[]
   /** Median over the newest looks; null without any. */
@@ -72,6 +75,7 @@ async function recordOf(
     person: { id, name },
     grades: LETTERS.map((letter) => ({ letter, n: letters.find(({ grade }) => grade === letter)?.n ?? 0 })),
     looks: letters.reduce((sum, { n }) => sum + n, 0),
+    late: await countLateLooks(db, campaignId, id),
     days: await countByDay(db, who, DAYS),
     medianSeconds: medianOf(await listSeconds(db, who, NEWEST)),
     consistency: selfConsistency(await listRepeatPairs(db, who)),

@@ -51,6 +51,20 @@ describe('the evidence of a candidate', () => {
     expect(evidence.judgement?.designation).toBe('SWS J004000.00-050000.0')
   })
 
+  it('keeps what came late apart: for leads, and of a person their own', async () => {
+    const { db, campaign, id, graders, leadReads, permit, reader } = await gradedCase()
+    const first = await giveGrade(db, campaign, id, graders[4], 'C', { occasion: 'late' })
+    await giveGrade(db, campaign, id, graders[4], 'B', { occasion: 'late', replaces: first, remark: 'On the train' })
+    const shown = async (viewer: Parameters<typeof candidateEvidence>[1]) => {
+      const { judgement } = await candidateEvidence(db, viewer, id)
+      return { counted: judgement?.grades.length, late: judgement?.late.map(({ by, grade, own }) => [by, grade, own]) }
+    }
+    expect(await shown(leadReads)).toEqual({ counted: 3, late: [['godwit', 'B', false]] })
+    expect(await shown(await permit(graders[4], 'read'))).toEqual({ counted: 3, late: [['G06', 'B', true]] })
+    expect(await shown(await permit(graders[0], 'read'))).toEqual({ counted: 3, late: [] })
+    expect(await shown(await permit(reader, 'read'))).toEqual({ counted: 3, late: [] })
+  })
+
   it('is withheld from a grader who has not judged it, and shown with pseudonyms to one who has', async () => {
     const { db, id, graders, permit } = await gradedCase()
     const blind = await candidateEvidence(db, await permit(graders[4], 'read'), id)

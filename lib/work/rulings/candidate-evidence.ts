@@ -1,6 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { findCandidate, findDesignation, listFilesOf } from '@/db/queries/candidates'
+import { listLateAnswersOf } from '@/db/queries/late-grades'
 import { listLeftOutNow } from '@/db/queries/left-out'
 import { listAnswersOf, listVerdictsOf, type EvidenceAnswer } from '@/db/queries/verdicts'
 import { listRulingsOf, listStateChanges } from '@/db/queries/rulings'
@@ -54,6 +55,8 @@ export interface Judgement {
   votes: Record<GradeLetter, number>
   /** The answers that count: the newest standing one of each person, surest first. */
   grades: EvidenceGrade[]
+  /** What came when the candidate had all its looks and counts nowhere: for leads, and of a person their own. */
+  late: EvidenceGrade[]
   verdict: EvidenceVerdict | null
   /** Of a verdict by reliability: how it comes about. */
   why: ReliabilityWhy | null
@@ -75,7 +78,7 @@ export interface EvidenceGrade {
   own: boolean
   grade: GradeLetter
   /** Of somebody who was asked for a look, whether it took a place of the wanted number or not. */
-  occasion: 'first' | 'asked'
+  occasion: 'first' | 'asked' | 'late'
   /** An asked look of somebody who could see the others' grades before. */
   informed: boolean
   /** Left out of the consensus now: it does not count. A grader learns it of themselves only. */
@@ -160,8 +163,9 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
   const onlyOwn = permit.role === 'grader'
   const by = (person: { name: string; pseudonym: string | null }) =>
     named ? person.name : (person.pseudonym ?? 'a member')
-  const [answers, verdictRows, rulingRows, changes, designation, asked, leftOut] = await Promise.all([
+  const [answers, late, verdictRows, rulingRows, changes, designation, asked, leftOut] = await Promise.all([
     listAnswersOf(db, candidate.id, { graderId: onlyOwn ? permit.viewer.id : undefined }),
+    listLateAnswersOf(db, candidate.id, named ? null : permit.viewer.id),
     listVerdictsOf(db, candidate.id),
     listRulingsOf(db, candidate.id),
     listStateChanges(db, candidate.id),
@@ -207,6 +211,11 @@ async function judgementOf(db: Kysely<DB>, permit: CampaignPermit<'read'>, candi
         ),
       }))
       .sort(surestFirst),
+    late: late.map((answer) => ({
+      ...gradeOf(answer, by(answer), permit.viewer.id, undefined),
+      occasion: 'late',
+      leftOut: false,
+    })),
     verdict: verdict ? { ...verdict, reason: reasonInShort(verdict.reason) } : null,
     why: verdict ? await findWhy(db, candidate.id, verdict, reader) : null,
     rulings,

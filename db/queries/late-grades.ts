@@ -1,0 +1,52 @@
+import { sql, type Kysely } from 'kysely'
+import type { DB } from '../schema'
+import type { EvidenceAnswer } from './verdicts'
+
+/**
+ * Standing answers that came when the candidate had all its looks, in order of their ids.
+ * @param by of this person only
+ */
+export async function listLateAnswersOf(
+  db: Kysely<DB>,
+  candidateId: number,
+  by: number | null,
+): Promise<EvidenceAnswer[]> {
+  return db
+    .selectFrom('grade')
+    .innerJoin('person', 'person.id', 'grade.person_id')
+    .leftJoin('membership', (join) =>
+      join
+        .onRef('membership.person_id', '=', 'grade.person_id')
+        .onRef('membership.campaign_id', '=', 'grade.campaign_id'),
+    )
+    .select([
+      'grade.id',
+      'grade.person_id as personId',
+      'person.name',
+      'membership.pseudonym',
+      'grade.grade',
+      'grade.occasion',
+      'grade.tags',
+      'grade.remark',
+      'grade.seconds',
+      'grade.given_at as givenAt',
+    ])
+    .where('grade.candidate_id', '=', candidateId)
+    .where('grade.occasion', '=', 'late')
+    .where(sql<boolean>`not exists (select 1 from grade later where later.replaces = grade.id)`)
+    .$if(by !== null, (query) => query.where('grade.person_id', '=', by))
+    .orderBy('grade.id')
+    .execute()
+}
+
+/** Looks of a person that came late, corrections left out. */
+export async function countLateLooks(db: Kysely<DB>, campaignId: number, personId: number): Promise<number> {
+  const row = await db
+    .selectFrom('look_count')
+    .select('n')
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .where('occasion', '=', 'late')
+    .executeTakeFirst()
+  return row?.n ?? 0
+}
