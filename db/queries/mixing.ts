@@ -78,12 +78,21 @@ const sentOnByPasser = (campaignId: number, personId: number) => sql<SqlBool>`(
   or coalesce((select mark from sheet_mark own where own.candidate_id = candidate.id and own.person_id = ${personId}
     order by own.id desc limit 1), '') = 'sent on')`
 
+export interface UnseenStamp extends QueuedCandidate {
+  /** Painted over a galaxy that this person has graded. */
+  galaxySeen: 0 | 1
+}
+
 export async function listUnseenStamps(
   db: Kysely<DB>,
   who: { campaignId: number; personId: number },
-): Promise<QueuedCandidate[]> {
+): Promise<UnseenStamp[]> {
   return unseenStamps(db, who)
     .select(['candidate.id', 'candidate.name', 'candidate.ra_deg as raDeg', 'candidate.dec_deg as decDeg'])
+    .select(
+      sql<0 | 1>`exists (select 1 from grade seen
+        where seen.candidate_id = candidate.painted_over and seen.person_id = ${who.personId})`.as('galaxySeen'),
+    )
     .orderBy('candidate.id')
     .execute()
 }
@@ -96,6 +105,19 @@ export async function countUnseenStamps(
     .select((e) => e.fn.countAll<number>().as('n'))
     .executeTakeFirstOrThrow()
   return row.n
+}
+
+export async function hasPractised(
+  db: Kysely<DB>,
+  { campaignId, personId }: { campaignId: number; personId: number },
+): Promise<boolean> {
+  const row = await db
+    .selectFrom('membership')
+    .select('practises')
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .executeTakeFirst()
+  return row?.practises === 1
 }
 
 /** Calibration stamps that this person holds. */

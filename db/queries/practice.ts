@@ -1,44 +1,50 @@
-import type { Kysely } from 'kysely'
+import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { GradeLetter } from '../schema/grading'
 import type { Json } from '../schema/values'
+import type { QueuedCandidate } from './queue'
 
-export interface PracticeCounts {
-  wanted: number
-  /** Imaged calibration stamps of the campaign. */
-  stamps: number
-  answered: number
+export interface StampOfPractice extends QueuedCandidate {
+  answered: 0 | 1
+  /** Neither answered in practice, nor graded, nor on this person's bench or sheet. */
+  unmet: 0 | 1
 }
 
-export async function findPracticeCounts(
+/** Imaged calibration stamps of the campaign, as this person has met them. */
+export async function listPracticeStamps(
   db: Kysely<DB>,
-  campaignId: number,
-  personId: number,
-): Promise<PracticeCounts> {
+  { campaignId, personId }: { campaignId: number; personId: number },
+): Promise<StampOfPractice[]> {
+  const met = (table: string) =>
+    sql<SqlBool>`exists (select 1 from ${sql.table(table)} met
+      where met.candidate_id = candidate.id and met.person_id = ${personId})`
+  const anywhere = sql.join(['practice_answer', 'grade', 'lease', 'sheet_mark', 'sheet_lease'].map(met), sql` or `)
   return db
-    .selectFrom('campaign')
-    .select((e) => [
-      'practice_wanted as wanted',
-      e
-        .selectFrom('candidate')
-        .select((c) => c.fn.countAll<number>().as('n'))
-        .where('candidate.campaign_id', '=', campaignId)
-        .where('candidate.truth', 'is not', null)
-        .where('candidate.imaged_at', 'is not', null)
-        .$asScalar()
-        .$notNull()
-        .as('stamps'),
-      e
-        .selectFrom('practice_answer')
-        .select((p) => p.fn.countAll<number>().as('n'))
-        .where('practice_answer.campaign_id', '=', campaignId)
-        .where('practice_answer.person_id', '=', personId)
-        .$asScalar()
-        .$notNull()
-        .as('answered'),
-    ])
-    .where('id', '=', campaignId)
-    .executeTakeFirstOrThrow()
+    .selectFrom('candidate')
+    .select(['candidate.id', 'candidate.name', 'candidate.ra_deg as raDeg', 'candidate.dec_deg as decDeg'])
+    .select([sql<0 | 1>`${met('practice_answer')}`.as('answered'), sql<0 | 1>`not (${anywhere})`.as('unmet')])
+    .where('candidate.campaign_id', '=', campaignId)
+    .where('candidate.truth', 'is not', null)
+    .where('candidate.imaged_at', 'is not', null)
+    .execute()
+}
+
+/** From now on this person's practice half stays away from their bench. */
+export async function setPractises(
+  db: Kysely<DB>,
+  { campaignId, personId }: { campaignId: number; personId: number },
+): Promise<void> {
+  await db
+    .updateTable('membership')
+    .set({ practises: 1 })
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .where('practises', '=', 0)
+    .execute()
+}
+
+export async function isPracticeUid(db: Kysely<DB>, uid: string): Promise<boolean> {
+  return (await db.selectFrom('practice_answer').select('id').where('uid', '=', uid).executeTakeFirst()) !== undefined
 }
 
 export interface StampTruth {

@@ -41,6 +41,8 @@ export interface MembershipTable {
   pseudonym: string
   /** Whether a lead has asked this person to make the first pass over the sheet. */
   passes: Generated<0 | 1>
+  /** Whether this person has been shown a stamp to practise on: from then on half of them never come at their bench. */
+  practises: Generated<0 | 1>
   created_at: IsoTime
   ended_at: IsoTime | null
 }

@@ -6,6 +6,9 @@ import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_suppor
 import { confusionOf } from './confusion'
 import { answerPractice, practiceFirst, practiceState } from './practice'
 
+/** With it the halves of the first three graders are three and three. */
+const SECRET = 'secret of tests 19'
+
 let scenario: Scenario
 let stamps: number[]
 let ordinary: number
@@ -13,6 +16,7 @@ let ordinary: number
 beforeEach(async () => {
   scenario = await makeScenario()
   const { db, campaign } = scenario
+  await db.insertInto('site').values({ key: 'queue-secret', value: SECRET }).execute()
   ordinary = await addImagedCandidate(db, campaign, 'SWS0001')
   stamps = []
   for (let n = 0; n < 6; n++) stamps.push(await addImagedCandidate(db, campaign, `SWS001${n}`))
@@ -61,11 +65,18 @@ describe('practice', () => {
   })
 
   it('never shows what is on the bench or was graded there, nor tells its truth', async () => {
-    for (const id of stamps) {
-      await recordGrade(scenario.db, await permitOf(0), id, GradeInput.parse({ grade: 'A' }))
+    const { db, campaign } = scenario
+    await db.updateTable('campaign').set({ calibration_share: 0.5, practice_wanted: 0 }).execute()
+    for (let n = 0; n < 60; n++) await addImagedCandidate(db, campaign, `SWS1${n}`)
+    const { candidates } = await lendNext(db, await permitOf(0), 60)
+    const onBench = candidates.map(({ id }) => id).filter((id) => stamps.includes(id))
+    expect(onBench).toHaveLength(6)
+    expect((await state()).next).toBeNull()
+    for (const id of onBench.slice(0, 3)) {
+      await recordGrade(db, await permitOf(0), id, GradeInput.parse({ grade: 'A' }))
     }
     expect((await state()).next).toBeNull()
-    await expect(answer(stamps[0])).rejects.toMatchObject({ type: 'not-in-practice' })
+    for (const id of onBench) await expect(answer(id)).rejects.toMatchObject({ type: 'not-in-practice' })
   })
 
   it('leaves half of the stamps for measuring, and never shows a practised one in the queue', async () => {
@@ -90,6 +101,58 @@ describe('practice', () => {
     expect(seen.filter((id) => stamps.includes(id)).length).toBe(3)
   })
 
+  it('keeps its half away from the bench from the first stamp that it shows, answered or not', async () => {
+    await scenario.db.updateTable('campaign').set({ calibration_share: 0.5, practice_wanted: 0 }).execute()
+    for (let n = 0; n < 60; n++) await addImagedCandidate(scenario.db, scenario.campaign, `SWS1${n}`)
+    const shown = (await state()).next!.id
+    const seen: number[] = []
+    for (;;) {
+      const { candidates } = await lendNext(scenario.db, await permitOf(0), 20)
+      if (candidates.length === 0) break
+      for (const { id } of candidates) {
+        seen.push(id)
+        await recordGrade(scenario.db, await permitOf(0), id, GradeInput.parse({ grade: 'N' }))
+      }
+    }
+    expect(seen).not.toContain(shown)
+    expect(seen.filter((id) => stamps.includes(id)).length).toBe(3)
+    // Whoever never practised is measured by all.
+    const { candidates } = await lendNext(scenario.db, await permitOf(1), 60)
+    expect(candidates.filter(({ id }) => stamps.includes(id)).length).toBeGreaterThan(3)
+  })
+
+  it('leaves no grade to a stamp that it has told, so that nobody is measured by what they know', async () => {
+    const { next } = await state()
+    await answer(next!.id)
+    await expect(
+      recordGrade(scenario.db, await permitOf(0), next!.id, GradeInput.parse({ grade: 'A' })),
+    ).rejects.toMatchObject({ status: 409, type: 'judgement-seen' })
+    expect(await scenario.db.selectFrom('grade').selectAll().execute()).toEqual([])
+  })
+
+  it('refuses an answer whose id belongs to another', async () => {
+    const { next } = await state()
+    await answer(next!.id)
+    const other = (await state()).next!.id
+    const taken = input('A', `id-0-${next!.id}-x`)
+    await expect(answerPractice(scenario.db, await permitOf(0), other, taken)).rejects.toMatchObject({
+      status: 409,
+      type: 'grade-id-taken',
+    })
+  })
+
+  it('comes before a grade too, but for what had been lent already', async () => {
+    const grade = GradeInput.parse({ grade: 'N' })
+    await expect(recordGrade(scenario.db, await permitOf(2), ordinary, grade)).rejects.toMatchObject({
+      status: 409,
+      type: 'practice-first',
+    })
+    await scenario.db.updateTable('campaign').set({ practice_wanted: 0 }).execute()
+    await lendNext(scenario.db, await permitOf(2), 5)
+    await scenario.db.updateTable('campaign').set({ practice_wanted: 2 }).execute()
+    await recordGrade(scenario.db, await permitOf(2), ordinary, grade)
+  })
+
   it('counts in no grade, estimate or number of looks', async () => {
     const { next } = await state()
     await answer(next!.id)
@@ -107,6 +170,7 @@ describe('practice', () => {
     expect(await practiceFirst(scenario.db, await scenario.permit(scenario.lead, 'lead'))).toBeNull()
     for (let n = 0; n < 2; n++) await answer((await state()).next!.id)
     expect(await practiceFirst(scenario.db, await permitOf(0))).toBeNull()
+    await lendNext(scenario.db, await permitOf(1), 1)
     await recordGrade(scenario.db, await permitOf(1), ordinary, GradeInput.parse({ grade: 'N' }))
     expect(await practiceFirst(scenario.db, await permitOf(1))).toBeNull()
     expect(await practiceFirst(scenario.db, await permitOf(2))).not.toBeNull()

@@ -1,16 +1,15 @@
 import 'server-only'
-import { createHash } from 'node:crypto'
 import type { Kysely } from 'kysely'
 import { z } from 'zod'
-import { listUnseenStamps } from '@/db/queries/mixing'
 import {
   countPracticeAnswers,
   findPracticeAnswer,
-  findPracticeCounts,
   findStampTruth,
   hasGraded,
   insertPracticeAnswer,
-  type PracticeCounts,
+  isPracticeUid,
+  listPracticeStamps,
+  setPractises,
   type StampTruth,
 } from '@/db/queries/practice'
 import type { QueuedCandidate } from '@/db/queries/queue'
@@ -23,6 +22,7 @@ import type { PaintingTruth } from '@/lib/science/lensing/painting/paint-lens'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import { confusionOf, type Confusion } from './confusion'
+import { practiceHalf } from './practice-half'
 
 export interface PracticeStamp extends QueuedCandidate, CandidatePictures {}
 
@@ -58,44 +58,43 @@ export const PracticeInput = z.strictObject({
 })
 export type PracticeInput = z.output<typeof PracticeInput>
 
-/** Of the stamps of a campaign at least half stay for measuring: whoever has practised on a stamp is never measured by it. */
-const mostPractice = ({ wanted, stamps }: PracticeCounts): number =>
-  Math.min(stamps, Math.max(wanted, Math.ceil(stamps / 2)))
+/** What there is for this person to practise on, and how much of it the campaign asks for. */
+async function practiceOf(db: Kysely<DB>, who: { campaignId: number; personId: number }) {
+  const half = await practiceHalf(db, who)
+  const stamps = await listPracticeStamps(db, who)
+  const own = stamps.filter(({ id, answered }) => answered === 1 || half.has(id))
+  const next = own
+    .filter(({ unmet }) => unmet === 1)
+    .sort((a, b) => (half.placeOf(a.id) < half.placeOf(b.id) ? -1 : 1))[0]
+  return {
+    stamps: stamps.length,
+    answered: own.filter(({ answered }) => answered === 1).length,
+    /** Those that are there for it; stamps on the bench, or graded there, are not. */
+    within: own.filter(({ answered, unmet }) => answered + unmet > 0).length,
+    next: next ? { id: next.id, name: next.name, raDeg: next.raDeg, decDeg: next.decDeg } : null,
+  }
+}
 
+const whoOf = ({ campaign, viewer }: CampaignPermit<'read'>) => ({ campaignId: campaign.id, personId: viewer.id })
+
+/** From the first stamp that is shown on, the bench leaves this person's practice half alone. */
 export async function practiceState(db: Kysely<DB>, permit: CampaignPermit<'grade'>): Promise<PracticeState> {
   const { campaign, viewer } = permit
-  const counts = await findPracticeCounts(db, campaign.id, viewer.id)
-  const next = await nextStamp(db, permit, counts)
+  const { stamps, answered, within, next } = await practiceOf(db, whoOf(permit))
+  if (next) await setPractises(db, whoOf(permit))
   const pictures = next ? (await picturesOf(db, campaign, [next.id])).get(next.id) : undefined
   return {
-    answered: counts.answered,
-    wanted: Math.min(counts.wanted, counts.stamps),
-    stamps: counts.stamps,
+    answered,
+    wanted: Math.min(campaign.practice_wanted, within),
+    stamps,
     next: next && pictures ? { ...next, ...pictures } : null,
     own: confusionOf(await countPracticeAnswers(db, campaign.id, viewer.id)),
   }
 }
 
 /**
- * Stamps come in an order of each person's own that does not change, so that an answer is taken for the one that is shown and no
- * other: otherwise practice would tell the truth of whatever lies on the bench.
- */
-async function nextStamp(
-  db: Kysely<DB>,
-  { campaign, viewer }: CampaignPermit<'grade'>,
-  counts: PracticeCounts,
-): Promise<QueuedCandidate | null> {
-  if (counts.answered >= mostPractice(counts)) return null
-  const place = (id: number) => createHash('sha256').update(`${viewer.id} ${id}`).digest('hex')
-  const unseen = await listUnseenStamps(db, { campaignId: campaign.id, personId: viewer.id })
-  return (
-    unseen.map((stamp) => ({ stamp, at: place(stamp.id) })).sort((a, b) => (a.at < b.at ? -1 : 1))[0]?.stamp ?? null
-  )
-}
-
-/**
  * Takes an answer in practice and tells the truth. It counts nowhere: in no consensus, no reliability, no report to others.
- * @throws Problem 409 `not-in-practice` for anything but the stamp that practice shows this person now.
+ * @throws Problem 409 `not-in-practice` for anything but the stamp that practice shows this person now, `grade-id-taken`.
  */
 export async function answerPractice(
   db: Kysely<DB>,
@@ -108,13 +107,17 @@ export async function answerPractice(
     const given = await findPracticeAnswer(transaction, candidateId, viewer.id)
     const truth = await findStampTruth(transaction, campaign.id, candidateId)
     if (given && truth) return tell(truth, given.grade)
-    const next = await nextStamp(transaction, permit, await findPracticeCounts(transaction, campaign.id, viewer.id))
+    const { next } = await practiceOf(transaction, whoOf(permit))
     if (!truth || next?.id !== candidateId) {
       throw conflict(
         'not-in-practice',
         'This stamp is not the one that practice shows you now, so nothing was told. Load the page again to go on.',
       )
     }
+    if (await isPracticeUid(transaction, input.id)) {
+      throw conflict('grade-id-taken', 'This id belongs to another answer. Make a new id for each.')
+    }
+    await setPractises(transaction, whoOf(permit))
     await insertPracticeAnswer(transaction, {
       uid: input.id,
       campaignId: campaign.id,
@@ -143,20 +146,16 @@ export async function practiceFirst(
   permit: CampaignPermit<'grade'>,
 ): Promise<{ wanted: number; answered: number } | null> {
   const { campaign, viewer, role } = permit
-  if (role !== 'grader') return null
-  const counts = await findPracticeCounts(db, campaign.id, viewer.id)
-  const wanted = Math.min(counts.wanted, counts.stamps)
-  if (counts.answered >= wanted || (await hasGraded(db, campaign.id, viewer.id))) return null
+  if (role !== 'grader' || campaign.practice_wanted === 0) return null
+  const { answered, within, next } = await practiceOf(db, whoOf(permit))
+  const wanted = Math.min(campaign.practice_wanted, within)
+  if (answered >= wanted || (await hasGraded(db, campaign.id, viewer.id))) return null
   // Stamps that lie on the bench, or were graded, cannot be practised on: nobody is kept out for want of them.
-  return (await nextStamp(db, permit, counts)) ? { wanted, answered: counts.answered } : null
+  return next ? { wanted, answered } : null
 }
 
-/** Whether practice is worth a place in the navigation: it has something to show, or has been done. Viewers do not grade. */
-export async function practiceUseful(
-  db: Kysely<DB>,
-  { campaign, viewer, role }: CampaignPermit<'read'>,
-): Promise<boolean> {
-  if (role === 'viewer') return false
-  const counts = await findPracticeCounts(db, campaign.id, viewer.id)
-  return counts.stamps > 0 && counts.answered < mostPractice(counts)
+/** Whether practice is worth a place in the navigation: it has something to show. Viewers do not grade. */
+export async function practiceUseful(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<boolean> {
+  if (permit.role === 'viewer') return false
+  return (await practiceOf(db, whoOf(permit))).next !== null
 }

@@ -28,6 +28,7 @@ import { askAnsweredBy } from './asked-answer'
 import { consensusDelayMs } from './consensus-due'
 import type { GradeInput } from './grade-input'
 import { recordLate } from './late-answer'
+import { assertMayBegin } from './may-begin'
 import { recordRepeat } from './repeat-answer'
 
 export interface GivenGrade {
@@ -62,7 +63,7 @@ export interface RecordedGrade {
  * The answer to an asked look is taken in any case. Of somebody who has not graded the candidate it is the first grade where a place
  * is left, so that the rule and the queue count the same looks; else it takes none.
  * @throws Problem 404 not of this campaign, 409 `not-imaged`, `candidate-full`, `grade-id-taken`,
- * `judgement-seen`, 422 no such recipe.
+ * `judgement-seen`, `practice-first`, 422 no such recipe.
  */
 export async function recordGrade(
   db: Kysely<DB>,
@@ -93,6 +94,7 @@ export async function recordGrade(
     if (late && !ask && saysTheSame(late, input)) return { row: late, replaced: null }
     if (corrected || (late && !ask)) await assertUnswayed(transaction, permit, candidateId)
     const rule = await ruleInForce(transaction, campaign.id)
+    if (!standing && !late) await assertMayBegin(transaction, permit, candidate)
     const room = await roomAt(transaction, candidate, viewer.id, rule)
     if (!corrected && !ask && !candidate.is_calibration && (late || room !== 'left')) {
       if (!late && !input.late) throw full(room)

@@ -62,6 +62,26 @@ describe('the answer to a candidate that came back', () => {
     expect(await listRepeatPairs(scenario.db, who())).toEqual([{ first: 'A', again: 'B' }])
   })
 
+  it('is refused of another turn than was shown, and with the id of another grade', async () => {
+    await give({ grade: 'A', id: 'the-first-one' })
+    await comeBack()
+    await expect(give({ grade: 'N', turned: 2 })).rejects.toMatchObject({ status: 409, type: 'no-repeat' })
+    await expect(give({ grade: 'N', turned: 3, id: 'the-first-one' })).rejects.toMatchObject({
+      status: 409,
+      type: 'grade-id-taken',
+    })
+    expect(await grades()).toHaveLength(1)
+  })
+
+  it('makes a pair with the first grade as it stood then, whatever that is corrected to', async () => {
+    await give({ grade: 'B' })
+    await give({ grade: 'A' })
+    await comeBack()
+    await give({ grade: 'C', turned: 3 })
+    await give({ grade: 'C' })
+    expect(await listRepeatPairs(scenario.db, who())).toEqual([{ first: 'A', again: 'C' }])
+  })
+
   it('is refused where nothing came back, and changes nothing', async () => {
     await give({ grade: 'A' })
     await expect(give({ grade: 'N', turned: 3 })).rejects.toMatchObject({ status: 409, type: 'no-repeat' })

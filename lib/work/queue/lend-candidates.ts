@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { countLooks, findMix, listUnseenStamps } from '@/db/queries/mixing'
+import { countLooks, findMix } from '@/db/queries/mixing'
 import {
   countOthersLeases,
   deleteExpiredLeases,
@@ -14,6 +14,7 @@ import {
 import type { RepeatCandidate } from '@/db/queries/repeats'
 import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
+import type { Role } from '@/db/schema/people'
 import type { IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import { waldBoundaries } from '@/lib/science/agreement/sequential-test'
@@ -24,6 +25,7 @@ import { askerOf } from '@/lib/work/campaigns/asker'
 import { chooseLooks } from './choose-looks'
 import { LEASE_MS, MOST_LENT } from './lease-time'
 import { ratesIn } from './lens-estimate'
+import { measuringStamps } from './measuring-stamps'
 import { kindOf, mix } from './mix'
 import { newestModel } from './model-of-run'
 import { orderSeed, personStream } from './person-stream'
@@ -41,6 +43,7 @@ export interface LentCandidates {
 
 interface QueuePlan {
   rule: RuleInForce
+  role: Role
   /** Of the mean method. */
   order: Campaign['queue_order']
   marks: WalkMarks
@@ -53,7 +56,7 @@ interface QueuePlan {
  */
 export async function lendCandidates(
   db: Kysely<DB>,
-  { campaign, viewer }: CampaignPermit<'grade'>,
+  { campaign, viewer, role }: CampaignPermit<'grade'>,
   count: number,
 ): Promise<LentCandidates> {
   const wanted = Math.min(count, MOST_LENT)
@@ -62,18 +65,19 @@ export async function lendCandidates(
     const now = isoTime()
     const until = isoTime(LEASE_MS)
     const asker = askerOf(campaign, viewer.id, rule, now)
-    const plan = { rule, order: campaign.queue_order, marks: walkMarks(db) }
+    const plan = { rule, role, order: campaign.queue_order, marks: walkMarks(db) }
     await deleteExpiredLeases(transaction, campaign.id, now)
     const asked = await askedLooks(transaction, asker, wanted)
     const room = wanted - asked.length
     const lent = await listLentCandidates(transaction, asker, wanted)
-    const held = besides(asked, await amongHeld(transaction, asker, lent)).slice(0, room)
+    const { together, waiting } = await amongHeld(transaction, asker, lent)
+    const held = besides(asked, together).slice(0, room)
     if (held.length > 0) {
       const ids = held.map(({ id }) => id)
       await setLeasesUntil(transaction, viewer.id, ids, until)
     }
     const more = room - held.length
-    const next = more > 0 ? await listMixed(transaction, asker, plan, { asked, held: held.length, more }) : []
+    const next = more > 0 ? await listMixed(transaction, asker, plan, { asked, held: held.length, more, waiting }) : []
     const candidateIds = next.filter((one) => !('turned' in one)).map(({ id }) => id)
     if (candidateIds.length > 0) {
       await insertLeases(transaction, { campaignId: campaign.id, personId: viewer.id, candidateIds, until })
@@ -87,7 +91,12 @@ async function listMixed(
   transaction: Kysely<DB>,
   asker: Asker,
   plan: QueuePlan,
-  { asked, held, more }: { asked: readonly AskedCandidate[]; held: number; more: number },
+  {
+    asked,
+    held,
+    more,
+    waiting,
+  }: { asked: readonly AskedCandidate[]; held: number; more: number; waiting: readonly RepeatCandidate[] },
 ): Promise<(QueuedCandidate | RepeatCandidate)[]> {
   const wanted = await listNext(transaction, asker, plan, more + asked.length)
   const ordinary = besides(asked, wanted).slice(0, more)
@@ -99,15 +108,29 @@ async function listMixed(
   const drawAt = (place: number) => stream.at(place)
   const place = (await countLooks(transaction, asker.campaignId, asker.personId)) + held
   const kinds = Array.from({ length: more }, (_, k) => kindOf(drawAt(place + k), shares))
-  const unseen = kinds.includes('stamp') ? besides(asked, await listUnseenStamps(transaction, asker)) : []
+  const { role } = plan
+  const unseen = kinds.includes('stamp') ? besides(asked, await measuringStamps(transaction, { ...asker, role })) : []
+  // Rather not the galaxy that the person remembers.
+  const strange = unseen.filter(({ galaxySeen }) => galaxySeen === 0)
+  const stampsToMix = (strange.length > 0 ? strange : unseen).map(asQueued)
   const repeats = kinds.includes('repeat') ? besides(asked, await repeatable(transaction, asker)) : []
-  const queue = mix({ ordinary, stamps: unseen, repeats }, drawAt, place, more, shares)
+  const queue = mix<QueuedCandidate | RepeatCandidate>(
+    { ordinary, stamps: stampsToMix, waiting, repeats },
+    drawAt,
+    place,
+    more,
+    shares,
+  )
   const back = await bringBack(
     transaction,
     asker,
-    queue.flatMap(({ kind, item }, k) => (kind === 'repeat' ? { item, draw: drawAt(place + k) } : [])),
+    queue.flatMap(({ kind, item }, k) =>
+      kind === 'repeat' && !('turned' in item) ? { item, draw: drawAt(place + k) } : [],
+    ),
   )
-  return queue.map(({ kind, item }) => (kind === 'repeat' ? back.find(({ id }) => id === item.id)! : item))
+  return queue.map(({ kind, item }) =>
+    kind === 'repeat' && !('turned' in item) ? back.find(({ id }) => id === item.id)! : item,
+  )
 }
 
 /** Those that a lead has reopened come before what the rule wants. */

@@ -71,7 +71,9 @@ describe('mixing', () => {
     const shares = { calibration: 0.1, repeat: 0 }
     const queue = mix(supplies, drawAt, 17, 1000, shares)
     const stamps = queue.filter(({ kind }) => kind === 'stamp').length
-    expect(mixedAhead({ ordinary: 300, stamps: 20, repeatsFrom: 20 }, drawAt, 17, shares)).toBe(stamps)
+    expect(mixedAhead({ ordinary: 300, stamps: 20, repeats: 0, recent: [], between: 20 }, drawAt, 17, shares)).toBe(
+      stamps,
+    )
     expect(queue.length).toBe(300 + stamps)
   })
 })

@@ -20,6 +20,8 @@ export interface Supplies<T> {
   ordinary: readonly T[]
   /** In an order that does not change from one asking to the next. */
   stamps: readonly T[]
+  /** Own candidates that have come back before and wait for an answer: they come first where one is due, in this order. */
+  waiting?: readonly T[]
   repeats: readonly T[]
 }
 
@@ -41,12 +43,14 @@ export function mix<T>(
 ): Mixed<T>[] {
   const ordinary = [...supplies.ordinary]
   const rest = { stamp: [...supplies.stamps], repeat: [...supplies.repeats] }
+  const waiting = [...(supplies.waiting ?? [])]
   const mixed: Mixed<T>[] = []
   while (mixed.length < count && ordinary.length > 0) {
     const draw = drawAt(place + mixed.length)
     const kind = kindOf(draw, shares)
     const from = kind === 'ordinary' ? [] : rest[kind]
-    if (from.length === 0) mixed.push({ kind: 'ordinary', item: ordinary.shift()! })
+    if (kind === 'repeat' && waiting.length > 0) mixed.push({ kind, item: waiting.shift()! })
+    else if (from.length === 0) mixed.push({ kind: 'ordinary', item: ordinary.shift()! })
     else mixed.push({ kind, item: from.splice(Math.floor(draw.pick * from.length), 1)[0] })
   }
   return mixed
@@ -55,24 +59,46 @@ export function mix<T>(
 /** Places ahead that are looked at one by one; beyond them the shares are enough. */
 const LOOKED_AT = 5000
 
+export interface LeftToMix {
+  ordinary: number
+  stamps: number
+  /** Own candidates that may come back now. */
+  repeats: number
+  /** Of the newest first looks, the oldest first, whether they may come back once they are far enough behind. */
+  recent: readonly boolean[]
+  /** So many first looks must lie between. */
+  between: number
+}
+
 /**
  * How many stamps and repeats are still to come among the ordinary candidates that are left: place by place, so that what is left
- * falls by one with each look, whatever the look was at. Repeats are taken to be there from a place on.
+ * falls by one with each look, whatever the look was at.
  */
 export function mixedAhead(
-  left: { ordinary: number; stamps: number; repeatsFrom: number },
+  left: LeftToMix,
   drawAt: (place: number) => PlaceDraw,
   place: number,
   shares: Shares,
 ): number {
-  let [ordinary, stamps, ahead] = [left.ordinary, left.stamps, 0]
+  let [ordinary, stamps, repeats, ahead] = [left.ordinary, left.stamps, left.repeats, 0]
+  const recent = [...left.recent]
+  const look = (mayComeBack: boolean) => {
+    recent.push(mayComeBack)
+    if (recent.length > left.between && recent.shift()) repeats++
+  }
   for (let k = 0; k < LOOKED_AT && ordinary > 0; k++) {
     const kind = kindOf(drawAt(place + k), shares)
     if (kind === 'stamp' && stamps > 0) {
       stamps--
       ahead++
-    } else if (kind === 'repeat' && place + k >= left.repeatsFrom) ahead++
-    else ordinary--
+      look(false)
+    } else if (kind === 'repeat' && repeats > 0) {
+      repeats--
+      ahead++
+    } else {
+      ordinary--
+      look(true)
+    }
   }
   const { calibration, repeat } = shares
   const ordinaryShare = 1 - calibration - repeat

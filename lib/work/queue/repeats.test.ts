@@ -79,6 +79,51 @@ describe('own candidates that come back', () => {
     expect(again?.turned).toBe(waiting?.turned)
   })
 
+  it('come back scattered after leaving, not all at once', async () => {
+    await lookOn(0, 30)
+    const far = (await ask(0, 50)).candidates.map(({ turned }) => Boolean(turned))
+    expect(far.filter(Boolean).length).toBeGreaterThan(4)
+    await giveBack(scenario.db, await permitOf(0))
+    expect((await ask(0, 50)).candidates.map(({ turned }) => Boolean(turned))).toEqual(far)
+    await giveBack(scenario.db, await permitOf(0))
+    const first = (await ask(0, 5)).candidates.map(({ turned }) => Boolean(turned))
+    expect(first).toEqual(far.slice(0, 5))
+  })
+
+  it('lapse when the campaign asks for none any more', async () => {
+    await lookOn(0, 30)
+    expect((await ask(0, 50)).candidates.some(({ turned }) => turned)).toBe(true)
+    await scenario.db.updateTable('campaign').set({ repeat_share: 0 }).execute()
+    expect((await ask(0, 50)).candidates.some(({ turned }) => turned)).toBe(false)
+  })
+
+  it('are not told as still to come when none is left to come back', async () => {
+    await lookOn(0, 30)
+    await noteShown(
+      scenario.db,
+      await scenario.permit(scenario.graders[0], 'read'),
+      (await scenario.db.selectFrom('grade').select('candidate_id').execute()).map(({ candidate_id }) => candidate_id),
+    )
+    await scenario.db.updateTable('campaign').set({ repeat_share: 0.2 }).execute()
+    const { left } = await ask(0)
+    const seen = await lookOn(0)
+    // What comes back of the looks still to be given is foreseen up to what the answers are.
+    expect(Math.abs(seen.length - left)).toBeLessThanOrEqual(2)
+  })
+
+  it('do not come once the person has been shown what others made of them while they waited', async () => {
+    await lookOn(0, 30)
+    const waiting = (await ask(0, 50)).candidates.filter(({ turned }) => turned)
+    await noteShown(
+      scenario.db,
+      await scenario.permit(scenario.graders[0], 'read'),
+      waiting.map(({ id }) => id),
+    )
+    const now = (await ask(0, 50)).candidates.filter(({ turned }) => turned).map(({ id }) => id)
+    expect(waiting.filter(({ id }) => now.includes(id))).toEqual([])
+    await expect(answer(0, waiting[0])).rejects.toMatchObject({ status: 409, type: 'judgement-seen' })
+  })
+
   it('are shown with their compass turned along', async () => {
     const { db } = scenario
     await lookOn(0, 30)
@@ -95,7 +140,7 @@ describe('own candidates that come back', () => {
         grade_id: null,
       })
       .execute()
-    const shown = (await ask(0)).candidates.find(({ id }) => id === candidate_id)
+    const shown = (await ask(0, 40)).candidates.find(({ id }) => id === candidate_id)
     expect(shown?.turned).toBe(4)
     expect(shown?.geometry.eastLeft).toBe(false)
   })

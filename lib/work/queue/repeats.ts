@@ -1,7 +1,13 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { countLooks, findMix } from '@/db/queries/mixing'
-import { insertRepeatLooks, listOpenRepeats, listRepeatable, type RepeatCandidate } from '@/db/queries/repeats'
+import {
+  insertRepeatLooks,
+  listOpenRepeats,
+  listRecentLooks,
+  listRepeatable,
+  type RepeatCandidate,
+} from '@/db/queries/repeats'
 import type { QueuedCandidate } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import { kindOf } from './mix'
@@ -20,6 +26,13 @@ interface Who {
 
 export const repeatable = (db: Kysely<DB>, who: Who): Promise<QueuedCandidate[]> =>
   listRepeatable(db, who, { looksAgo: LOOKS_BETWEEN, limit: DRAWN_FROM })
+
+/** What may come back to this person now, what waits for its answer among it, and what of their newest looks may later. */
+export async function repeatsLeft(db: Kysely<DB>, who: Who): Promise<{ repeats: number; recent: boolean[] }> {
+  const waiting = await listOpenRepeats(db, who)
+  const more = await repeatable(db, who)
+  return { repeats: waiting.length + more.length, recent: await listRecentLooks(db, who, LOOKS_BETWEEN) }
+}
 
 /** 1 to 7: never as it was. */
 export const turnOf = ({ pick }: PlaceDraw): number => 1 + (Math.floor(pick * 6_999_993) % 7)
@@ -40,24 +53,26 @@ export async function bringBack(
   return looks
 }
 
-/** What waits for an answer, put among what the person holds at the places that were drawn for it, so that the order stays. */
+/**
+ * What waits for an answer, put among what the person holds at the places that were drawn for it, so that the order stays. What has no
+ * place among them waits on: given back with the rest, it must not come all at once.
+ */
 export async function amongHeld<T extends { id: number }>(
   db: Kysely<DB>,
   who: Who,
   held: readonly T[],
-): Promise<(T | RepeatCandidate)[]> {
-  const repeats = await listOpenRepeats(db, who)
-  if (repeats.length === 0) return [...held]
+): Promise<{ together: (T | RepeatCandidate)[]; waiting: RepeatCandidate[] }> {
   const { calibrationShare, repeatShare } = await findMix(db, who.campaignId)
+  const waiting = repeatShare > 0 ? await listOpenRepeats(db, who) : []
+  if (waiting.length === 0) return { together: [...held], waiting }
   const shares = { calibration: calibrationShare, repeat: repeatShare }
   const stream = await personStream(db, who.campaignId, who.personId)
   const place = await countLooks(db, who.campaignId, who.personId)
   const lent = [...held]
   const together: (T | RepeatCandidate)[] = []
-  while (lent.length + repeats.length > 0) {
+  while (lent.length > 0) {
     const isRepeat = kindOf(stream.at(place + together.length), shares) === 'repeat'
-    const from = (isRepeat || lent.length === 0) && repeats.length > 0 ? repeats : lent
-    together.push(from.shift()!)
+    together.push(isRepeat && waiting.length > 0 ? waiting.shift()! : lent.shift()!)
   }
-  return together
+  return { together, waiting }
 }

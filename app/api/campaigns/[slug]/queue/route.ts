@@ -1,5 +1,6 @@
 import { z } from 'zod'
 import { route } from '@/app/api/_lib/route'
+import { assertPractised } from '@/lib/work/grading/may-begin'
 import { permitCampaign } from '@/lib/work/people/permission'
 import { giveBack } from '@/lib/work/queue/give-back'
 import { lendNext } from '@/lib/work/queue/lend-next'
@@ -20,6 +21,7 @@ export const GET = route({
   }),
   handler: async ({ db, viewer, params, query }) => {
     const permit = await permitCampaign(db, viewer, params.slug, 'grade')
+    await assertPractised(db, permit)
     return Response.json(await lendNext(db, permit, query.count), { headers: { 'cache-control': 'no-store' } })
   },
 })
