@@ -24,8 +24,21 @@ export interface PublicRelease {
 
 /** The public releases of a campaign, by its slug. */
 export async function publicReleases(db: Kysely<DB>, slug: string): Promise<PublicReleases> {
+  return withFates(db, await listPublicReleases(db, slug))
+}
+
+/** Of every campaign, the one with the newest release first. */
+export async function allPublicReleases(db: Kysely<DB>): Promise<PublicReleases[]> {
+  const bySlug = new Map<string, ReleaseRow[]>()
+  for (const release of await listPublicReleases(db)) {
+    bySlug.set(release.slug, [...(bySlug.get(release.slug) ?? []), release])
+  }
+  return Promise.all([...bySlug.values()].map((rows) => withFates(db, rows)))
+}
+
+async function withFates(db: Kysely<DB>, rows: readonly ReleaseRow[]): Promise<PublicReleases> {
   const releases: PublicRelease[] = []
-  for (const release of await listPublicReleases(db, slug)) {
+  for (const release of rows) {
     const notices = (await listNoticesOf(db, release.id)).filter((one) => one.access === 'public' && one.made === 1)
     releases.push({
       release,

@@ -2,41 +2,31 @@ import { expect, it } from 'vitest'
 import type { ReleasedGrade } from '@/db/queries/release-making'
 import { whatCounts } from './what-counts'
 
-const given = (id: number, personId: number, occasion: ReleasedGrade['occasion'], replaces: number | null = null) => ({
+const grade = (id: number, more: Partial<ReleasedGrade> = {}): ReleasedGrade => ({
   id,
   candidateId: 1,
-  personId,
-  by: `G0${personId}`,
-  occasion,
-  grade: 'A' as const,
-  tags: '[]' as ReleasedGrade['tags'],
+  by: 'G02',
+  personId: 2,
+  occasion: 'first',
+  grade: 'A',
+  tags: '[]',
   reason: null,
   remark: null,
-  replaces,
-  givenAt: '2026-12-01T10:00:00.000Z' as ReleasedGrade['givenAt'],
+  replaces: null,
+  givenAt: '2026-01-01T00:00:00.000Z',
+  ...more,
+})
+const reasons = (grades: ReleasedGrade[], leftOut: number[] = []) =>
+  whatCounts(grades, new Set(leftOut)).map(({ notCounted }) => notCounted)
+
+it('counts of each person the newest answer, and says of the others why they do not count', () => {
+  expect(reasons([grade(1), grade(2, { replaces: 1 }), grade(3, { personId: 3 })])).toEqual(['corrected', null, null])
+  expect(reasons([grade(1), grade(2, { occasion: 'asked' })])).toEqual(['answered again when asked', null])
+  expect(reasons([grade(1), grade(2, { occasion: 'repeat' })])).toEqual([null, 'repeat look'])
+  expect(reasons([grade(1), grade(2, { personId: 3, occasion: 'late' })])).toEqual([null, 'came late'])
 })
 
-it('says of each answer whether the verdict rests on it, and why not: a late one never counts nor stands before another', () => {
-  const grades = [
-    given(1, 1, 'first'),
-    given(2, 1, 'first', 1),
-    given(3, 1, 'repeat'),
-    given(4, 2, 'first'),
-    given(5, 2, 'asked'),
-    given(6, 3, 'first'),
-    given(7, 4, 'late'),
-    given(8, 5, 'first'),
-    given(9, 5, 'late'),
-  ]
-  expect(whatCounts(grades, new Set([3])).map(({ notCounted }) => notCounted)).toEqual([
-    'corrected',
-    null,
-    'repeat look',
-    'answered again when asked',
-    null,
-    'grader left out',
-    'came late',
-    null,
-    'came late',
-  ])
+it('keeps candidates apart, and counts nobody who is left out', () => {
+  expect(reasons([grade(1), grade(2, { candidateId: 2 })])).toEqual([null, null])
+  expect(reasons([grade(1), grade(2, { personId: 3 })], [2])).toEqual(['grader left out', null])
 })
