@@ -18,6 +18,15 @@ const nextConfig = {
         { key: 'Referrer-Policy', value: 'same-origin' },
       ],
     },
+    {
+      // So do the secrets of releases that are open by link.
+      source: '/r/:path*',
+      has: [{ type: 'query', key: 'key' }],
+      headers: [
+        { key: 'Referrer-Policy', value: 'no-referrer' },
+        { key: 'X-Robots-Tag', value: 'noindex, nofollow' },
+      ],
+    },
   ],
 }
 

@@ -159,3 +159,7 @@ export function viewsOf(recipe: Recipe, bands: string[]): ViewName[] {
   }
   return views
 }
+
+/** The label of a view by its key alone, for pictures whose recipe is not at hand; a key that is not known stands for itself. */
+export const viewLabel = (key: string): string =>
+  COMBINED_VIEWS.find((view) => view.key === key)?.label ?? bandOfView(key) ?? key
