@@ -23,7 +23,6 @@ export function whatCounts(grades: readonly ReleasedGrade[], leftOut: ReadonlySe
     if (corrected.has(id)) return 'corrected'
     if (occasion === 'repeat') return 'repeat look'
     if (occasion === 'late') return 'came late'
-    if (occasion === 'late') return 'came late'
     if (standing.get(`${candidateId} ${personId}`) !== id) return 'answered again when asked'
     return leftOut.has(personId) ? 'grader left out' : null
   }
