@@ -11,6 +11,7 @@ import {
   toldByProbability,
   WORD_COLUMNS,
 } from '@/components/table/shared-columns'
+import { KnownLabelMark } from '@/components/matching/known-label'
 import { StampThumbnail } from '@/components/table/stamp-thumbnail'
 import type { TableColumn } from '@/components/table/table-column'
 import type { TableSort } from '@/components/table/table-state'
@@ -51,6 +52,7 @@ const NAME: TableColumn<CandidateRow> = {
       >
         {row.name}
       </Link>
+      <KnownLabelMark labels={row.known} />
       {row.calibration ? (
         <span className="rounded-full border border-edge/60 px-2 text-note text-mute">calibration</span>
       ) : null}

@@ -11,6 +11,7 @@ import {
   toldByProbability,
   WORD_COLUMNS,
 } from '@/components/table/shared-columns'
+import { KnownLabelMark } from '@/components/matching/known-label'
 import { StampThumbnail } from '@/components/table/stamp-thumbnail'
 import type { TableColumn } from '@/components/table/table-column'
 import type { TableSort } from '@/components/table/table-state'
@@ -46,6 +47,7 @@ export const CATALOGUE_COLUMNS: readonly TableColumn<CatalogueRow>[] = [
           {row.designation ?? row.name}
         </Link>
         {row.designation ? <CopyButton text={row.designation} what="designation" /> : null}
+        <KnownLabelMark labels={row.known} />
       </span>
     ),
   },

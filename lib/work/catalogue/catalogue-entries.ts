@@ -12,6 +12,7 @@ import type { GradeLetter } from '@/db/schema/grading'
 import type { StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { GRADE_POINTS, gradesAmong, meanAndSpread } from '@/lib/science/agreement/grades'
+import { knownLabels, type KnownLabel } from '@/lib/work/matching/known-labels'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { gradeClass, type GradeClass } from './grade-class'
@@ -41,6 +42,8 @@ export interface CatalogueEntry {
   tags: { tag: string; count: number }[]
   lensRedshift: number | null
   sourceRedshift: number | null
+  /** Objects of reference lists at its place, nearest first: 'Old ring (Marsh lenses, 0.21 arcsec)'; null without any. */
+  knownAs: string | null
   enteredAt: IsoTime
 }
 
@@ -61,7 +64,7 @@ export async function* catalogueEntries(
   for (let afterId = 0; ;) {
     const rows = await listEntriesAfter(db, scope, { afterId, limit: PAGE })
     if (rows.length === 0) return
-    yield await withAnswers(db, scope.campaignId, rows)
+    yield await withAnswers(db, permit, rows)
     if (rows.length < PAGE) return
     afterId = rows[rows.length - 1].id
   }
@@ -74,14 +77,24 @@ export async function catalogueEntriesAmong(
   ids: readonly number[],
 ): Promise<CatalogueEntry[]> {
   const scope = candidateScope(permit)
-  return withAnswers(db, scope.campaignId, await listEntriesAmong(db, scope, ids))
+  return withAnswers(db, permit, await listEntriesAmong(db, scope, ids))
 }
 
-async function withAnswers(db: Kysely<DB>, campaignId: number, rows: readonly EntryRow[]): Promise<CatalogueEntry[]> {
+async function withAnswers(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  rows: readonly EntryRow[],
+): Promise<CatalogueEntry[]> {
   const ids = rows.map((row) => row.id)
-  const answers = byCandidate(await listEntryAnswers(db, campaignId, ids))
-  return rows.map((row) => entryOf(row, answers.get(row.id) ?? []))
+  const answers = byCandidate(await listEntryAnswers(db, permit.campaign.id, ids))
+  const known = await knownLabels(db, permit, ids)
+  return rows.map((row) => ({ ...entryOf(row, answers.get(row.id) ?? []), knownAs: inWords(known.get(row.id)) }))
 }
+
+const inWords = (labels: readonly KnownLabel[] | undefined): string | null =>
+  labels
+    ?.map(({ name, list, separationArcsec }) => `${name} (${list}, ${separationArcsec.toFixed(2)} arcsec)`)
+    .join('; ') ?? null
 
 export function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryAnswer[]> {
   const groups = new Map<number, EntryAnswer[]>()
@@ -93,7 +106,7 @@ export function byCandidate(answers: readonly EntryAnswer[]): Map<number, EntryA
   return groups
 }
 
-function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): CatalogueEntry {
+function entryOf(row: EntryRow, answers: readonly EntryAnswer[]): Omit<CatalogueEntry, 'knownAs'> {
   const votes = { A: 0, B: 0, C: 0, N: 0, U: 0 }
   const counted = answers.filter(({ leftOut }) => leftOut === 0)
   for (const { grade } of counted) votes[grade] += 1

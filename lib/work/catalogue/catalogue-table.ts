@@ -13,7 +13,7 @@ import { mayExport } from './export-catalogue'
 import type { TableInput } from './table-input'
 import { listFilter, radiiFor, tableSlice } from './table-slice'
 
-export interface CatalogueTableRow extends Omit<CatalogueEntry, 'remarks' | 'reason' | 'tags'>, BesideRow {
+export interface CatalogueTableRow extends Omit<CatalogueEntry, 'remarks' | 'reason' | 'tags' | 'knownAs'>, BesideRow {
   tags: string
   remarks: string
   thumbnail: string | null

@@ -135,6 +135,13 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
     value: (entry) => entry.sourceRedshift,
   },
   {
+    name: 'known_as',
+    datatype: 'unicodeChar',
+    ucd: 'meta.id.cross',
+    description: 'Objects of reference lists within the radius of each list, nearest first: name (list, separation)',
+    value: (entry) => entry.knownAs,
+  },
+  {
     name: 'entered_at',
     datatype: 'char',
     ucd: 'time.creation',
