@@ -4,7 +4,7 @@ import type { SkyPosition } from '@/lib/science/sky/separation'
 import { FilterField, TypedField } from './filter-field'
 import { RegionPlot } from './region-plot'
 import { readRegion, type RegionField } from './sky-region'
-import type { TableColumn } from './table-column'
+import type { ColumnFilterKind, TableColumn } from './table-column'
 import { ToolButton } from './tool-button'
 
 interface FilterPanelProps<Row> {
@@ -29,10 +29,7 @@ export function FilterPanel<Row>({ columns, filters, onChange, positions, found,
     >
       <div className="grid flex-1 grid-cols-2 content-start gap-x-3 gap-y-2.5 md:grid-cols-[repeat(auto-fill,minmax(8.25rem,1fr))]">
         {fields.map((column) => (
-          <div
-            key={column.id}
-            className={typeof column.filter === 'object' && column.filter.length > 3 ? 'col-span-2' : ''}
-          >
+          <div key={column.id} className={widthOf(column.filter)}>
             <FilterField column={column} value={filters[column.id] ?? ''} onChange={onChange} />
           </div>
         ))}
@@ -45,6 +42,13 @@ export function FilterPanel<Row>({ columns, filters, onChange, positions, found,
       </ToolButton>
     </section>
   )
+}
+
+/** Choices stand in one line where there is room. */
+function widthOf(filter: ColumnFilterKind | undefined): string {
+  const letters = typeof filter === 'object' ? filter.join('').length + 2 * filter.length : 0
+  if (letters > 45) return 'col-span-2 md:col-span-3'
+  return letters > 20 ? 'col-span-2' : ''
 }
 
 function RegionFields<Row>({
@@ -74,7 +78,7 @@ function RegionFields<Row>({
         {(['ra', 'dec'] as const).map((axis) => {
           const column = columns.find(({ id }) => id === axis)
           return column ? (
-            <div key={axis} className="md:col-span-2">
+            <div key={axis} className="col-span-2">
               <FilterField column={column} value={filters[axis] ?? ''} onChange={onChange} />
             </div>
           ) : null

@@ -9,7 +9,6 @@ export type RegionField = (typeof REGION_FIELDS)[number]
 export interface ReadRegion {
   /** Only where both fields can be read. */
   cone: SkyCone | null
-  position: SkyPosition | null
   problems: Partial<Record<RegionField, string>>
 }
 
@@ -37,7 +36,6 @@ export function readRegion(filters: Readonly<Record<string, string>>): ReadRegio
     cone: known
       ? { ...position!, radiusArcsec: radiusArcsec!, halfWidthDeg: coneHalfWidthDeg(position!.decDeg, radiusArcsec!) }
       : null,
-    position,
     problems,
   }
 }

@@ -56,8 +56,14 @@ const remarked =
         and ${stands} and ${isTold})`
   }
 
-const shownOfStamp = (judgedBy: number, what: RawBuilder<unknown>) => sql`(select ${what} from grade g
-  where g.candidate_id = l.candidate_id and ${stands} and ${isShown(judgedBy)})`
+const shownOfStamp = (judgedBy: number) => sql`g.candidate_id = l.candidate_id and ${stands} and ${isShown(judgedBy)}`
+
+const countOfStamp = (judgedBy: number) =>
+  sql`(select count(*) filter (where g.grade <> 'U') from grade g where ${shownOfStamp(judgedBy)})`
+
+/** Written as those of candidates are: any difference would find the stamps. */
+const tagsOfStamp = (judgedBy: number) => sql`(select group_concat(tag, ', ') from (
+  select distinct t.value as tag from grade g, json_each(g.tags) t where ${shownOfStamp(judgedBy)} order by 1))`
 
 /**
  * 'known' to a reference list in force; 'new' where no list whose objects are kept out of what is new knows it. A match that a lead has
@@ -94,19 +100,19 @@ function candidateColumns(scope: CandidateScope): Columns {
   const { judgedBy } = scope
   const judged = judgedBy === null ? undefined : sql<SqlBool>`true`
   const decided = judgedBy === null ? undefined : sql<SqlBool>`l.outcome <> 'open'`
-  const shown = (value: RawBuilder<unknown>, ofStamp: RawBuilder<unknown>) =>
-    judgedBy === null ? value : sql`(case when l.is_stamp then ${shownOfStamp(judgedBy, ofStamp)} else ${value} end)`
+  const shown = (value: RawBuilder<unknown>, ofStamp: (judgedBy: number) => RawBuilder<unknown>) =>
+    judgedBy === null ? value : sql`(case when l.is_stamp then ${ofStamp(judgedBy)} else ${value} end)`
   return {
     ...PLACE,
     name: { value: sql`l.name`, order: sql`l.name_key` },
     state: { value: sql`l.stage`, told: judged },
-    grades: { value: shown(sql`l.grades`, sql`count(*) filter (where g.grade <> 'U')`), told: judged },
+    grades: { value: shown(sql`l.grades`, countOfStamp), told: judged },
     mean: { value: sql`l.mean`, told: decided },
     spread: { value: sql`l.spread`, told: decided },
     probability: { value: sql`l.probability`, told: decided },
     score: { value: sql`l.score` },
     designation: { value: sql`l.designation`, told: judged },
-    tags: { value: shown(sql`l.tags`, sql`group_concat(nullif(g.tags, '[]'))`), told: judged },
+    tags: { value: shown(sql`l.tags`, tagsOfStamp), told: judged },
     remark: { value: sql`null`, contains: remarked(scope), told: judged },
     zlens: { value: sql`l.lens_redshift`, told: judged },
     zsource: { value: sql`l.source_redshift`, told: judged },
