@@ -41,6 +41,7 @@ export function SplitCase({
   controls,
   group,
   talk,
+  known,
 }: {
   slug: string
   evidence: CandidateEvidence
@@ -53,6 +54,8 @@ export function SplitCase({
   /** In place of the ruling on this case, while several are selected. */
   group: ReactNode
   talk: Talk | null
+  /** That reference lists know it, in a word. */
+  known?: ReactNode
 }) {
   const { verdict, standingRuling, rulings, grades } = judgement
   return (
@@ -62,6 +65,7 @@ export function SplitCase({
           <div className="flex min-w-0 flex-col gap-0.5">
             <h2 className="figures text-title font-semibold [overflow-wrap:anywhere]">{evidence.name}</h2>
             <Position raDeg={evidence.raDeg} decDeg={evidence.decDeg} />
+            {known}
           </div>
           <div className="flex items-center gap-3 pt-1">
             <Link

@@ -2,7 +2,7 @@
 
 import Link from 'next/link'
 import { useRouter } from 'next/navigation'
-import { startTransition, useLayoutEffect, useOptimistic, useRef, useState } from 'react'
+import { startTransition, useLayoutEffect, useOptimistic, useRef, useState, type ReactNode } from 'react'
 import { useKeySwitch } from '@/components/bench/use-key-switch'
 import { useLight } from '@/components/light/use-light'
 import { useLightKeys } from '@/components/light/use-light-keys'
@@ -38,6 +38,8 @@ export interface SplitsScreenProps {
   evidence: CandidateEvidence | null
   decides: string[]
   talk: Talk | null
+  /** That reference lists know the case, in a word. */
+  known?: ReactNode
   /** The ruling just made, to say so and to offer its reversal. */
   justRuled: RecentRuling | null
   /** The address names a case that is not here. */
@@ -195,6 +197,7 @@ export function SplitsScreen(props: SplitsScreenProps) {
                 action={props.ruleAction}
                 group={groupPanel}
                 talk={props.talk}
+                known={props.known}
                 controls={{
                   view: now.view,
                   onView: (view) => setNow({ ...now, view }),

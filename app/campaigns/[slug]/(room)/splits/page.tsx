@@ -1,8 +1,10 @@
 import type { Metadata } from 'next'
 import { permitPage } from '@/app/_lib/page-permit'
+import { KnownLabelMark } from '@/components/matching/known-label'
 import { SplitsScreen } from '@/components/splits/splits-screen'
 import { campaignCounts } from '@/lib/work/campaigns/campaign-counts'
 import { newestRun } from '@/lib/work/consensus/newest-run'
+import { knownLabels } from '@/lib/work/matching/known-labels'
 import { findSplitCase } from '@/lib/work/rulings/find-split-case'
 import { splitOrderOf } from '@/lib/work/rulings/split-worth'
 import { listSplitCases } from '@/lib/work/rulings/list-splits'
@@ -29,6 +31,7 @@ export default async function SplitsPage({ params, searchParams }: PageProps<'/c
   const { evidence } = found
   const calibration = evidence?.judgement?.calibration ?? false
   const talk = evidence ? await talkOf(db, permit, evidence.id, { calibration }) : null
+  const known = evidence ? (await knownLabels(db, permit, [evidence.id])).get(evidence.id) : undefined
   return (
     <SplitsScreen
       slug={slug}
@@ -38,6 +41,7 @@ export default async function SplitsPage({ params, searchParams }: PageProps<'/c
       open={counts.open}
       {...found}
       talk={talk}
+      known={known ? <KnownLabelMark labels={known} /> : null}
       justRuled={splits.ruled.find((ruling) => ruling.candidateId === idOf(query.ruled)) ?? null}
       ruleAction={ruleOnSplitAction.bind(null, slug, found.evidence?.id ?? 0)}
       groupAction={ruleOnSeveralAction.bind(null, slug)}
