@@ -15,7 +15,7 @@ import { WaitingCandidates, type MatchedFile } from './waiting-candidates'
 const FILES_PER_PAGE = 3000
 const LOOK_AGAIN_MS = 250
 /** So many candidates are imaged before it is asked again whether their batch goes on. */
-const GROUPS_PER_LOOK = 64
+const GROUPS_PER_LOOK = 128
 /** While the last of one part are drawn and committed, the next keeps the threads at work. */
 const PARTS_AT_ONCE = 2
 /** A file that shows its bands only when it is opened waits this long at most while more files keep coming. */

@@ -7,10 +7,10 @@ import { inLanes } from './in-lanes'
 import { plannedPlanes, type CandidateOutcome, type CandidateToImage } from './worker-tasks'
 
 /**
- * Sixteen candidates a task and a transaction: fewer pay more for the commit's sync than they gain, more make the progress
- * coarse. A task holds at most 32 MiB of files, so that large cutouts do not fill the memory.
+ * So many candidates a task, a transaction and a file of stamps: of fewer each pays more for the pages that every commit writes anew,
+ * of more the main thread is held up longer than a page request should wait. A task holds at most 32 MiB of files, so that large cutouts do not fill the memory.
  */
-const MOST_CANDIDATES = 16
+const MOST_CANDIDATES = 32
 const MOST_BYTES = 32 * 1024 * 1024
 
 export interface ToImage {
