@@ -61,6 +61,7 @@ function installPackages() {
 const TOOLS = [
   ['chromium', () => existsSync('/usr/bin/chromium')],
   ['python3-astropy', () => works('/usr/bin/python3', ['-c', 'import astropy'])],
+  ['python3-pyvo', () => works('/usr/bin/python3', ['-c', 'import pyvo'])],
   ['stilts', () => works('stilts', ['-version'])],
   ['libxml2-utils', () => works('xmllint', ['--version'])],
   ['fitsverify', () => existsSync('/usr/bin/fitsverify')],

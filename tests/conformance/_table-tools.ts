@@ -21,6 +21,15 @@ export function votlint(path: string): string {
   return run('stilts', ['votlint', 'votable=' + path], 'stilts').output
 }
 
+const OWN_SCHEMA = new URL('../../fixtures/vosi/ConeSearch-v1.0.xsd', import.meta.url).pathname
+
+/** What stilts finds wrong with an XML document against IVOA's schemas, which it carries; empty where nothing is. */
+export function xsdFaults(path: string): string {
+  const schema = `schemaloc=http://www.ivoa.net/xml/ConeSearch/v1.0=${OWN_SCHEMA}`
+  const { output, succeeded } = run('stilts', ['xsdvalidate', 'uselocals=true', schema, `doc=${path}`], 'stilts')
+  return succeeded ? '' : output || 'stilts xsdvalidate failed'
+}
+
 /** Whether the file is valid against the VOTable 1.4 schema that astropy ships. */
 export function validateAgainstSchema(path: string): ToolResult {
   const where =

@@ -78,7 +78,7 @@ function entryOf(candidate: ReleasedCandidate, { radius, labels, stamps }: Besid
     candidate_id: candidate.candidate_id,
     designation: candidate.designation!,
     name: candidate.name,
-    ra_deg: ((candidate.ra_deg! % 360) + 360) % 360,
+    ra_deg: inOneTurn(candidate.ra_deg!),
     dec_deg: candidate.dec_deg!,
     class: gradeClass(ruled ? candidate.rulingGrade : null, verdict.mean),
     mean: verdict.mean,
@@ -105,6 +105,9 @@ function entryOf(candidate: ReleasedCandidate, { radius, labels, stamps }: Besid
     stamps: toJson(Object.fromEntries(stamps.map(({ view, sha256 }) => [view, sha256]))),
   }
 }
+
+/** The same right ascension from 0 to less than 360 degrees; one that is there already stays to the last bit. */
+const inOneTurn = (raDeg: number): number => (raDeg >= 0 && raDeg < 360 ? raDeg : (((raDeg % 360) + 360) % 360) % 360)
 
 function countedTags(tags: readonly string[]): string | null {
   const counts = new Map<string, number>()
