@@ -5,6 +5,7 @@ import 'fake-indexeddb/auto'
 import { afterEach, beforeEach, vi } from 'vitest'
 import { supply } from './_candidates'
 import { Bench } from './bench'
+import { closeOutboxes } from './outboxes'
 
 interface Sent {
   url: string
@@ -46,7 +47,10 @@ export function freshRoom(): void {
       return Response.json(method === 'GET' ? { ...room.queue, until: '' } : {})
     })
   })
-  afterEach(() => void vi.unstubAllGlobals())
+  afterEach(() => {
+    closeOutboxes()
+    vi.unstubAllGlobals()
+  })
 }
 
 export const grades = () => room.sent.filter(({ method }) => method === 'PUT')
@@ -66,5 +70,13 @@ export async function open(first = room.queue) {
     <Bench slug="north" campaignName="North field" personId={7} lead={false} first={{ ...first, until: '' }} />,
   )
   await look()
-  return { user, ...view }
+  return {
+    user,
+    ...view,
+    /** As when the page is closed, and nothing of it lives on. */
+    close: () => {
+      view.unmount()
+      closeOutboxes()
+    },
+  }
 }

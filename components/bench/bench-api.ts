@@ -23,12 +23,18 @@ export interface GradeBody {
 }
 
 export type SendOutcome =
-  /** `replaced`: the server had another grade of this person there, which this one corrected. */
-  | { outcome: 'saved'; replaced?: boolean }
-  /** The server understood and said no: asking again will not help. */
+  /**
+   * `replaced`: the server had another grade of this person there, which this one corrected. `late`: the candidate had all its looks,
+   * so it counts nowhere.
+   */
+  | { outcome: 'saved'; replaced?: boolean; late?: boolean }
+  /** The server said no to this grade for what it is: asking again will not help. */
   | { outcome: 'refused'; sentence: string }
-  /** To be tried again; the sentence says why it has not worked, and signing in may mend it. */
-  | { outcome: 'trouble'; sentence: string; signIn?: true }
+  /**
+   * To be tried again; the sentence says why it has not worked, and signing in may mend it. `answered`: the server is there and works,
+   * so what is behind it in line may fare better.
+   */
+  | { outcome: 'trouble'; sentence: string; signIn?: true; answered?: true }
 
 /** Whose bench this is: the server takes nothing of it for anybody else who has signed in beside it. */
 export interface BenchOwner {
@@ -54,13 +60,26 @@ async function problemOf(response: Response): Promise<{ type: unknown; sentence:
   return { type: body?.type, sentence }
 }
 
+/** A candidate that is gone answers as a campaign does that one may no longer see: whether the campaign is still there tells. */
+async function isMember(owner: BenchOwner): Promise<boolean> {
+  const response = await fetch(`${root(owner.slug)}/waiting`, { cache: 'no-store', headers: whose(owner) }).catch(
+    () => null,
+  )
+  return response?.ok ?? false
+}
+
+/** About this grade and nothing else, and so for good. All other refusals may end: a right is given back, a proxy mended. */
+const isFinal = (status: number, type: string) =>
+  status === 422 || (status === 409 && type !== 'urn:ringside:problem:not-imaged')
+
 export async function sendGrade(owner: BenchOwner, candidateId: number, body: GradeBody): Promise<SendOutcome> {
   let response: Response
   try {
     response = await fetch(`${root(owner.slug)}/candidates/${candidateId}/grade`, {
       method: 'PUT',
       headers: { 'content-type': 'application/json', ...whose(owner) },
-      body: JSON.stringify(body),
+      // After hours without a network a candidate may have all its looks: then the grade is kept beside them.
+      body: JSON.stringify({ ...body, late: true }),
       // Finishes even when the page is closed meanwhile.
       keepalive: true,
       // A connection that says nothing must not hold up the tabs that wait for their turn.
@@ -73,12 +92,12 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
     const answer = (await response.json().catch(() => null)) as Partial<RecordedGrade> | null
     // The sign-in page of a hotel's network answers 200 as well.
     if (typeof answer?.grade?.id !== 'string') return { outcome: 'trouble', sentence: SOMETHING_ELSE }
-    return { outcome: 'saved', replaced: typeof answer.replaced === 'string' }
+    return { outcome: 'saved', replaced: typeof answer.replaced === 'string', late: answer.late === true }
   }
   if (response.status === 401) {
     return {
       outcome: 'trouble',
-      sentence: 'You are signed out. What waits is kept and goes as soon as you are back.',
+      sentence: 'You are signed out. What waits is kept and goes once you are signed in again.',
       signIn: true,
     }
   }
@@ -93,8 +112,13 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
         'Somebody else has signed in in this browser. Your grades are kept here and go only once you are signed in again as yourself, in another tab.',
     }
   }
-  if (typeof type === 'string' && type.startsWith('urn:ringside:')) return { outcome: 'refused', sentence }
-  return { outcome: 'trouble', sentence: SOMETHING_ELSE }
+  if (typeof type !== 'string' || !type.startsWith('urn:ringside:')) {
+    return { outcome: 'trouble', sentence: SOMETHING_ELSE }
+  }
+  if (isFinal(response.status, type) || (response.status === 404 && (await isMember(owner)))) {
+    return { outcome: 'refused', sentence }
+  }
+  return { outcome: 'trouble', sentence, answered: true }
 }
 
 /** @throws Error when nothing usable comes back. */

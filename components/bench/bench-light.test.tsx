@@ -4,6 +4,7 @@ import { afterEach, beforeAll, beforeEach, describe, expect, it, vi } from 'vite
 import { planesAnswer, stubCanvas } from '@/components/light/_light-fixture'
 import { supply } from './_candidates'
 import { Bench } from './bench'
+import { closeOutboxes } from './outboxes'
 
 let planes: string[]
 
@@ -23,6 +24,7 @@ beforeEach(() => {
   })
 })
 afterEach(() => {
+  closeOutboxes()
   vi.unstubAllGlobals()
   vi.restoreAllMocks()
 })

@@ -60,10 +60,10 @@ describe('a grade on its way', () => {
 
   it('after a reload sends what was left and does not show its candidate again, whatever the server lends', async () => {
     room.answerGrade = () => new Response(null, { status: 503 })
-    const { user, unmount } = await open()
+    const { user, close } = await open()
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
-    unmount()
+    close()
     let release = () => {}
     room.answerGrade = () => new Promise((resolve) => (release = () => resolve(taken())))
     await open()
@@ -125,6 +125,40 @@ describe('a grade on its way', () => {
   })
 })
 
+describe('a grade whose bench was left by a link', () => {
+  it.each([
+    ['keeps it', () => {}],
+    ['keeps nothing', () => vi.stubGlobal('indexedDB', undefined)],
+  ])('goes on from the next page in a browser that %s, and its candidate does not come again', async (_, browser) => {
+    browser()
+    let down = true
+    room.answerGrade = () => (down ? new Response(null, { status: 503 }) : taken())
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
+    unmount()
+    down = false
+    const before = grades().length
+    await waitFor(() => expect(grades().length).toBeGreaterThan(before), { timeout: 4000 })
+    room.queue = supply([2, 3], { given: 1, left: 2 })
+    await open()
+    expect(name()).toBe('SWS-2')
+    expect(saved()).toBe('All grades saved')
+  })
+
+  it('is still waiting when one comes back to the bench before it has gone', async () => {
+    room.answerGrade = () => new Response(null, { status: 503 })
+    const { user, unmount } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toMatch(/^1 waiting/))
+    unmount()
+    await open()
+    expect(name()).toBe('SWS-2')
+    expect(saved()).toMatch(/^1 waiting/)
+    expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuetext', '1 of 3')
+  })
+})
+
 describe('a second tab', () => {
   const tell = (grade: unknown) => {
     const tab = new BroadcastChannel('ringside-outbox:north:7')
@@ -156,12 +190,12 @@ describe('after a reload', () => {
   })
 
   async function gradeTwoAndReload() {
-    const { user, unmount } = await open()
+    const { user, close } = await open()
     await user.keyboard('a')
     await look()
     await user.keyboard('b')
     await waitFor(() => expect(saved()).toBe('All grades saved'))
-    unmount()
+    close()
     room.queue = supply([3], { given: 2, left: 1 })
     const again = await open()
     await pause(60)
@@ -199,10 +233,10 @@ describe('after a reload', () => {
   })
 
   it('words and tags that were not sent are there again, and their candidate is not given back', async () => {
-    const { user, unmount } = await open()
+    const { user, close } = await open()
     await user.keyboard('mthin arc{Enter}')
     await user.keyboard('t1t')
-    unmount()
+    close()
     await waitFor(() =>
       expect(room.sent.at(-1)).toMatchObject({ method: 'DELETE', url: expect.stringMatching(/=2,3$/) }),
     )
@@ -215,10 +249,10 @@ describe('after a reload', () => {
   })
 
   it('begins a new sitting after some hours', async () => {
-    const { user, unmount } = await open()
+    const { user, close } = await open()
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toBe('All grades saved'))
-    unmount()
+    close()
     const now = Date.now()
     vi.spyOn(Date, 'now').mockReturnValue(now + 5 * 3_600_000)
     room.queue = supply([2, 3], { given: 1 })

@@ -109,6 +109,16 @@ export class BenchStore {
   }
 }
 
+/** The scopes of which grades wait in this browser, whoever gave them. Rejects where the browser keeps nothing. */
+export async function scopesWaiting(): Promise<string[]> {
+  const db = await connect(() => {})
+  try {
+    return [...new Set((await db.getAllKeys('waiting')).map(([scope]) => scope))]
+  } finally {
+    db.close()
+  }
+}
+
 async function connect(onClosed: () => void): Promise<IDBPDatabase<Shape>> {
   return openDB<Shape>(NAME, 1, {
     upgrade(fresh) {

@@ -77,6 +77,69 @@ describe('the outbox', () => {
     expect(outbox.snapshot()).toMatchObject({ trouble: null, waiting: [] })
   })
 
+  it('lets the others go where one is held up by itself, but nothing more of that candidate', async () => {
+    const held: SendOutcome = { outcome: 'trouble', sentence: 'No pictures yet.', answered: true }
+    const { outbox, sent } = browser().open([held])
+    outbox.add(waiting(1))
+    outbox.add(waiting(2))
+    outbox.add(waiting(1, 'N', { at: 3 }))
+    await settled()
+    expect(sent).toEqual(['uid-1-A', 'uid-2-A'])
+    expect(outbox.snapshot()).toMatchObject({ trouble: { sentence: 'No pictures yet.' } })
+    await vi.advanceTimersByTimeAsync(1000)
+    expect(sent.slice(2)).toEqual(['uid-1-A', 'uid-1-N'])
+    expect(outbox.snapshot()).toMatchObject({ trouble: null, waiting: [] })
+  })
+
+  it('holds the rest where a right is gone, and sends all of it when the right is back', async () => {
+    const held: SendOutcome = { outcome: 'trouble', sentence: 'There is no campaign.', answered: true }
+    const { outbox, sent, refused } = browser().open(Array.from({ length: 6 }, () => held))
+    for (let id = 1; id <= 20; id++) outbox.add(waiting(id))
+    await settled()
+    expect(sent).toHaveLength(3)
+    await vi.advanceTimersByTimeAsync(60_000)
+    expect(refused).toEqual([])
+    expect(outbox.snapshot()).toMatchObject({ trouble: null, waiting: [] })
+    expect(new Set(sent).size).toBe(20)
+  })
+
+  it('tells of a grade that came late, and does not take it for refused', async () => {
+    const { outbox, refused } = browser().open([{ outcome: 'saved', late: true }])
+    outbox.add(waiting(1))
+    await settled()
+    expect(refused).toEqual([])
+    expect(outbox.snapshot().refused).toMatchObject([
+      { taken: true, sentence: expect.stringMatching(/counts in no verdict/) },
+    ])
+  })
+
+  it('sends again what was refused when the person asks for it, with the same id, also after a reload', async () => {
+    const { disk, open } = browser()
+    const first = open([full])
+    first.outbox.add(waiting(1))
+    await settled()
+    first.close()
+    const second = open()
+    await second.outbox.open()
+    second.outbox.sendAgain('uid-1-A')
+    await settled()
+    expect(second.sent).toEqual(['uid-1-A'])
+    expect(second.outbox.snapshot()).toMatchObject({ waiting: [], refused: [] })
+    expect([disk.waiting.size, disk.refused.size]).toEqual([0, 0])
+  })
+
+  it('shows again what is refused again', async () => {
+    const { disk, open } = browser()
+    const { outbox, sent } = open([full, full])
+    outbox.add(waiting(1))
+    await settled()
+    outbox.sendAgain('uid-1-A')
+    await settled()
+    expect(sent).toHaveLength(2)
+    expect(outbox.snapshot().refused).toHaveLength(1)
+    expect(disk.refused.size).toBe(1)
+  })
+
   it('tries at once when told that the connection is back', async () => {
     const { outbox, sent } = browser().open([trouble])
     outbox.add(waiting(1))

@@ -1,8 +1,8 @@
 /**
  * Grades on their way to the server, in order, one at a time. Each is kept in the browser's database until the server has
  * acknowledged it, so that neither a failed request nor a reload loses it; its id makes a repeated delivery harmless. Tabs of one
- * person share what waits, and one of them sends at a time. What the server refuses is put aside with its sentence and never
- * sent again.
+ * person share what waits, and one of them sends at a time. What the server refuses for good is put aside with its sentence, and sent
+ * again only when the person asks for it.
  */
 import type { GradeBody, SendOutcome } from './bench-api'
 import type { Answer } from './bench-session'
@@ -54,6 +54,8 @@ export type TabMessage =
   | { tell: 'kept' }
   | { tell: 'settled'; id: string }
   | { tell: 'dismissed'; id: string }
+  /** What was refused is sent again. */
+  | { tell: 'again'; grade: WaitingGrade }
 
 export interface Surroundings {
   store: Pick<BenchStore, 'grades' | 'keepWaiting' | 'keepRefused' | 'forget'>
@@ -73,7 +75,11 @@ export interface Surroundings {
 const FIRST_RETRY_MS = 1000
 const LAST_RETRY_MS = 30_000
 export const EMPTY_OUTBOX: OutboxSnapshot = { waiting: [], refused: [], trouble: null, kept: true }
+/** So many answers in a row that say no for now, and the rest waits too. */
+const MOST_HELD = 3
 const REPLACED = 'It replaced the grade that you had given this candidate in another window or on another device.'
+const LATE =
+  'It came when this candidate had all its looks, so it is kept beside them for you and the leads, and counts in no verdict.'
 
 export class GradeOutbox {
   readonly #around: Surroundings
@@ -140,6 +146,10 @@ export class GradeOutbox {
     }
     if (message.tell === 'dismissed') this.#dismiss(message.id)
     if (message.tell === 'gave') this.#meet([message.grade], 'other tab')
+    if (message.tell === 'again') {
+      this.#settled.delete(message.grade.body.id)
+      this.#change({ refused: this.#snapshot.refused.filter(({ body }) => body.id !== message.grade.body.id) })
+    }
     await this.#read('other tab')
   }
 
@@ -147,6 +157,25 @@ export class GradeOutbox {
     this.#dismiss(id)
     void this.#drop('refused', id)
     this.#around.tell({ tell: 'dismissed', id })
+  }
+
+  /** What was refused goes into the line again, with the same id. */
+  sendAgain(id: string): void {
+    const found = this.#snapshot.refused.find(({ body }) => body.id === id)
+    if (!found) return
+    const { sentence: _, taken: __, ...grade } = found
+    this.#settled.delete(id)
+    this.#mine.set(id, grade)
+    this.#change({
+      refused: this.#snapshot.refused.filter((one) => one !== found),
+      waiting: this.#inOrder(this.#snapshot.waiting),
+    })
+    void this.#keep([grade])
+      .then(() => this.#drop('refused', id))
+      .then(() => {
+        this.#around.tell({ tell: 'again', grade })
+        this.flush()
+      })
   }
 
   /** No more tries after the one that is under way. */
@@ -162,21 +191,28 @@ export class GradeOutbox {
 
   async #sendAll(): Promise<void> {
     if (!this.#snapshot.kept && this.#mine.size > 0) await this.#keep([...this.#mine.values()])
+    /** Of these candidates nothing more is sent this time, so that a correction never comes before what it corrects. */
+    const held = new Set<number>()
+    let trouble: Trouble | null = null
     for (;;) {
       await this.#read('other tab')
-      const first = this.#snapshot.waiting[0]
-      if (!first) return this.#change({ trouble: null })
+      const first = this.#snapshot.waiting.find(({ candidateId }) => !held.has(candidateId))
+      if (!first) break
       const answer = await this.#around.send(first.candidateId, first.body)
-      if (answer.outcome === 'trouble') {
-        this.#failures++
-        this.#change({ trouble: { sentence: answer.sentence, signIn: answer.signIn ?? false } })
-        const pause = Math.min(LAST_RETRY_MS, FIRST_RETRY_MS * 2 ** (this.#failures - 1))
-        if (!this.#stopped) this.#timer = setTimeout(this.flush, pause)
-        return
+      if (answer.outcome !== 'trouble') {
+        if (held.size === 0) this.#failures = 0
+        await this.#settle(first, answer)
+        continue
       }
-      this.#failures = 0
-      await this.#settle(first, answer)
+      trouble ??= { sentence: answer.sentence, signIn: answer.signIn ?? false }
+      held.add(first.candidateId)
+      if (!answer.answered || held.size >= MOST_HELD) break
     }
+    this.#change({ trouble })
+    if (!trouble) return
+    this.#failures++
+    const pause = Math.min(LAST_RETRY_MS, FIRST_RETRY_MS * 2 ** (this.#failures - 1))
+    if (!this.#stopped) this.#timer = setTimeout(this.flush, pause)
   }
 
   async #settle(grade: WaitingGrade, answer: SendOutcome & { outcome: 'saved' | 'refused' }): Promise<void> {
@@ -186,9 +222,11 @@ export class GradeOutbox {
     const told: RefusedGrade | null =
       answer.outcome === 'refused'
         ? { ...grade, sentence: answer.sentence }
-        : answer.replaced && grade.first
-          ? { ...grade, sentence: REPLACED, taken: true }
-          : null
+        : answer.late
+          ? { ...grade, sentence: LATE, taken: true }
+          : answer.replaced && grade.first
+            ? { ...grade, sentence: REPLACED, taken: true }
+            : null
     if (told) this.#known.add(id)
     this.#change({
       waiting: this.#inOrder(this.#snapshot.waiting),
@@ -210,7 +248,9 @@ export class GradeOutbox {
       return this.#change({ kept: false })
     }
     const shown = new Set(this.#snapshot.refused.map(({ body }) => body.id))
-    const refused = stored.refused.filter(({ body: { id } }) => !shown.has(id) && !this.#dismissed.has(id))
+    const refused = stored.refused.filter(
+      ({ body: { id } }) => !shown.has(id) && !this.#dismissed.has(id) && !this.#mine.has(id),
+    )
     const waiting = this.#inOrder(stored.waiting)
     if (refused.length > 0 || !same(waiting, this.#snapshot)) {
       this.#change({ waiting, refused: [...this.#snapshot.refused, ...refused].sort(byTime) })

@@ -49,7 +49,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const look = resting ? null : currentLook(session)
   const candidateId = look?.candidate.id ?? null
   const recall = useRef<() => Promise<void>>(null)
-  const { outbox, snapshot, latest } = useOutbox(slug, personId, {
+  const { outbox, snapshot, latest, add } = useOutbox(slug, personId, {
     refused: ({ first: wasFirst, before, candidateId: id }) => {
       if (wasFirst) dispatch({ type: 'refused', candidateId: id })
       else if (before) dispatch({ type: 'correction refused', candidateId: id, before })
@@ -99,7 +99,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   function send({ candidate, answer, view, seconds: spent }: Look, before: Answer | null): void {
     const { grade, tags, reason } = answer
     const waiting = latest().waiting.find((one) => one.candidateId === candidate.id && one.before)
-    outbox?.add({
+    add({
       candidateId: candidate.id,
       name: candidate.name,
       first: before === null,
@@ -256,5 +256,6 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     writeRemark: (remark: string) => dispatch({ type: 'remark written', remark }),
     chooseView: (key: string) => dispatch({ type: 'view chosen', key }),
     dismiss: (id: string) => outbox?.dismiss(id),
+    sendAgain: (id: string) => outbox?.sendAgain(id),
   }
 }

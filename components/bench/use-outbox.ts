@@ -1,32 +1,18 @@
 'use client'
 
 import { useCallback, useEffect, useEffectEvent, useRef, useState, useSyncExternalStore } from 'react'
-import { sendGrade } from './bench-api'
-import { BenchStore } from './bench-store'
-import { exclusively } from './exclusively'
 import {
   EMPTY_OUTBOX,
-  GradeOutbox,
+  type GradeOutbox,
   type OutboxSnapshot,
   type RefusedGrade,
-  type TabMessage,
   type WaitingGrade,
 } from './grade-outbox'
-
-function olderStorage(): Storage | null {
-  try {
-    return window.localStorage
-  } catch {
-    return null
-  }
-}
+import { outboxOf } from './outboxes'
 
 const nothing = (): OutboxSnapshot => EMPTY_OUTBOX
 
-/**
- * The outbox of this person and campaign, shared with their other tabs, sending what an earlier visit left behind. It warns on
- * leaving where grades wait that the browser does not keep.
- */
+/** The outbox of this person and campaign, shared with their other tabs; it lives on when the bench is left. */
 export function useOutbox(
   slug: string,
   personId: number,
@@ -41,52 +27,38 @@ export function useOutbox(
   const found = useEffectEvent(on.found)
   const opened = useEffectEvent(on.opened)
   const made = useRef<GradeOutbox>(null)
+  /** Given at this bench, which knows of them. */
+  const given = useRef(new Set<string>())
   const [outbox, setOutbox] = useState<GradeOutbox | null>(null)
 
   useEffect(() => {
-    const scope = `${slug}:${personId}`
-    const tabs = 'BroadcastChannel' in globalThis ? new BroadcastChannel(`ringside-outbox:${scope}`) : null
+    const held = outboxOf(slug, personId)
     let gone = false
-    const box = new GradeOutbox({
-      store: new BenchStore(scope),
-      older: olderStorage(),
-      scope,
-      send: (candidateId, body) => sendGrade({ slug, personId }, candidateId, body),
-      exclusively: (work) => exclusively(`ringside-outbox:${scope}`, work),
-      tell: (message) => void (gone || tabs?.postMessage(message)),
-      onRefused: (grade) => void (gone || refused(grade)),
-      onFound: (grades, where) => void (gone || found(grades, where)),
-    })
-    if (tabs) tabs.onmessage = ({ data }: MessageEvent<TabMessage>) => void box.hear(data)
+    held.listener = { refused, foundElsewhere: (grades) => found(grades, 'other tab') }
     // The storage of the browser is only there after the first paint.
     // eslint-disable-next-line react-hooks/set-state-in-effect
-    setOutbox(box)
-    made.current = box
-    void box.open().then(() => gone || opened())
-    const visible = () => document.visibilityState === 'visible' && box.flush()
-    const leaving = (event: BeforeUnloadEvent) => {
-      const { waiting, kept } = box.snapshot()
-      if (waiting.length > 0 && !kept) event.preventDefault()
-    }
-    window.addEventListener('online', box.flush)
-    window.addEventListener('pageshow', box.flush)
-    document.addEventListener('visibilitychange', visible)
-    window.addEventListener('beforeunload', leaving)
+    setOutbox(held.outbox)
+    made.current = held.outbox
+    void held.opened.then(() => {
+      if (gone) return
+      const earlier = held.outbox.snapshot().waiting.filter(({ body }) => !given.current.has(body.id))
+      if (earlier.length > 0) found(earlier, 'earlier')
+      opened()
+    })
     return () => {
       gone = true
-      box.stop()
-      tabs?.close()
-      window.removeEventListener('online', box.flush)
-      window.removeEventListener('pageshow', box.flush)
-      document.removeEventListener('visibilitychange', visible)
-      window.removeEventListener('beforeunload', leaving)
+      held.listener = null
     }
   }, [slug, personId])
 
   const snapshot = useSyncExternalStore(outbox?.subscribe ?? neverChanges, outbox?.snapshot ?? nothing, nothing)
   /** As it is at the moment of asking, for what runs after an await. */
   const latest = useCallback(() => made.current?.snapshot() ?? EMPTY_OUTBOX, [])
-  return { outbox, snapshot, latest }
+  const add = (grade: WaitingGrade) => {
+    given.current.add(grade.body.id)
+    outbox?.add(grade)
+  }
+  return { outbox, snapshot, latest, add }
 }
 
 const neverChanges = () => () => {}
