@@ -33,7 +33,9 @@ describe('migrations', () => {
 
 describe('tables that only grow', () => {
   const GROWS_ONLY =
-    'rule recipe grade run verdict ruling state_change designation entry audit_event judgement_shown'.split(' ')
+    'rule recipe grade run verdict ruling state_change designation entry audit_event judgement_shown measurement'.split(
+      ' ',
+    )
 
   it.each(GROWS_ONLY)('%s has a trigger against UPDATE and one against DELETE', async (table) => {
     const db = await openMemoryDatabase()

@@ -132,6 +132,7 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
             <KeyLine on={keysOn} onSwitch={setKeysOn} keys={EVIDENCE_KEYS} />
             {desk.starts}
           </div>
+          {desk.list ? <Section title="Measured on the picture">{desk.list}</Section> : null}
           {judgement?.why && judgement.verdict ? (
             <Section title={`Why the verdict is ‘${judgement.verdict.outcome}’`}>
               {judgement.verdict.reason === judgement.stateReason ? null : (
@@ -147,7 +148,6 @@ export function EvidenceScreen(props: EvidenceScreenProps) {
         <div className="flex min-w-0 flex-col gap-7">
           {desk.panel}
           {judgement ? <JudgementColumn judgement={judgement} talk={talk} /> : <Withheld slug={slug} asked={asked} />}
-          {desk.list ? <Section title="Measured on the picture">{desk.list}</Section> : null}
           {sendOnAction ? (
             <Section title="Not sent on">
               <SendOn action={sendOnAction} />

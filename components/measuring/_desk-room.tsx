@@ -1,5 +1,5 @@
 /** The desk as a candidate's page shows it, for tests: a picture of 80 pixels of 0.2 arcsec in a box of 800 by 800. */
-import { fireEvent, render, screen } from '@testing-library/react'
+import { fireEvent, render } from '@testing-library/react'
 import { useState } from 'react'
 import { vi } from 'vitest'
 import { benchCandidate } from '@/components/bench/_candidates'
@@ -72,7 +72,8 @@ export function deskRoom(changes: Partial<CandidateMeasurements> = {}, geometry:
 }
 
 export const stage = () => {
-  const box = screen.getByRole('application')
+  // By attribute: looking a role up in a page of so many fields takes long.
+  const box = document.querySelector<HTMLElement>('[data-measuring]')!
   vi.spyOn(box, 'getBoundingClientRect').mockReturnValue(new DOMRect(0, 0, 800, 800))
   return box
 }
@@ -101,4 +102,4 @@ export function drag(from: [number, number], to: [number, number]) {
 }
 
 export const pointNames = () =>
-  screen.queryAllByRole('button', { name: /^Point \d/ }).map((button) => button.getAttribute('aria-label'))
+  [...document.querySelectorAll('[data-point]')].map((button) => button.getAttribute('aria-label'))

@@ -10,7 +10,8 @@ import type { DeskStore } from './desk-store'
 import type { DeskState } from './desk-state'
 import { curveNow } from './fit-now'
 import { spotOf, type Frame } from './frame'
-import { Cross, PointMarks } from './marks'
+import { withError } from './in-figures'
+import { Cross, Label, PointMarks } from './marks'
 import { ModelCurves, ModelHandles } from './model-marks'
 import { useDesk, useFrame } from './use-desk'
 import { useStageKeys } from './use-stage-keys'
@@ -57,6 +58,7 @@ function OnDesk({ state, frame }: { state: DeskState; frame: Frame }) {
   if (state.mode === 'model') {
     return (
       <>
+        <Reading text={`${state.model.lens.einsteinRadiusArcsec.toFixed(2)}″`} />
         {state.drawn === 'nothing' ? null : (
           <ModelCurves
             model={state.model}
@@ -80,9 +82,15 @@ function OnDesk({ state, frame }: { state: DeskState; frame: Frame }) {
   return (
     <>
       {curve ? <CurveMarks curve={curve} frame={frame} /> : null}
+      {'fitted' in now ? <Reading text={withError(now.radiusArcsec, now.errorArcsec, '″')} /> : null}
       <PointMarks points={state.points} chosen={state.chosen} frame={frame} />
     </>
   )
+}
+
+/** The radius on the picture itself, for where the panel is out of sight. */
+function Reading({ text }: { text: string }) {
+  return <Label at={{ x: 50, y: 4 }} text={text} />
 }
 
 /** Takes presses and keys. The points are buttons in it, so that each can be reached and moved by keyboard. */

@@ -27,7 +27,7 @@ export function MeasurementList(props: MeasurementListProps) {
     <div className="flex flex-col gap-3">
       {standing.length === 0 ? <p className="text-small text-mute">Nobody’s measurement stands here yet.</p> : null}
       {combined ? <Combined combined={combined} /> : null}
-      <ul className="flex flex-col gap-3">
+      <ul className="grid gap-x-6 gap-y-3 sm:grid-cols-2">
         {standing.map((kept) => (
           <Kept key={kept.id} kept={kept} apart={combined?.apartIds.includes(kept.id) ?? false} {...props} />
         ))}
