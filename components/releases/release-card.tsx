@@ -66,7 +66,7 @@ export function ReleaseCard({
             />
           ) : null}
           <div className="flex flex-wrap gap-x-5 gap-y-2 text-small">
-            <Link href={release.path} className="underline underline-offset-4">
+            <Link prefetch={false} href={release.path} className="underline underline-offset-4">
               Its page
             </Link>
             {mayChange && !isBusy && kind !== 'retraction' && !isWithdrawn ? (
