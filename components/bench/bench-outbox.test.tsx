@@ -1,10 +1,12 @@
 import { screen, waitFor, within } from '@testing-library/react'
-import { beforeEach, describe, expect, it, vi } from 'vitest'
+import { beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
 import { freshRoom, grades, look, name, open, pause, refusal, room, saved, taken } from './_bench-room'
 import { supply } from './_candidates'
 import { waitingGrade } from './_memory-store'
 
 freshRoom()
+// What the page fetches when it is first opened.
+beforeAll(() => import('./refused-grades'))
 
 function warnsOnLeaving(): boolean {
   const leaving = new Event('beforeunload', { cancelable: true })
@@ -53,9 +55,19 @@ describe('a grade on its way', () => {
     room.answerGrade = () => taken('other-id')
     const { user } = await open()
     await user.keyboard('a')
-    expect(await screen.findByText(/SWS-1/, { selector: 'p b' })).toBeInTheDocument()
-    expect(screen.getByText(/It replaced the grade that you had given/)).toBeInTheDocument()
-    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    await user.click(await screen.findByRole('button', { name: '1 came with a note' }))
+    const told = await screen.findByRole('dialog')
+    expect(told).toHaveTextContent(/SWS-1, your A: It replaced the grade that you had given/)
+    expect(within(told).queryByRole('button', { name: 'Send it again' })).not.toBeInTheDocument()
+  })
+
+  it('says of one that came late what became of it, and goes on counting it as given', async () => {
+    room.answerGrade = () => Response.json({ grade: { id: 'x' }, late: true })
+    const { user } = await open()
+    await user.keyboard('a')
+    await user.click(await screen.findByRole('button', { name: '1 came with a note' }))
+    expect(await screen.findByRole('dialog')).toHaveTextContent(/It came when this candidate had all its looks/)
+    expect(document.querySelector('[role=progressbar]')).toHaveAttribute('aria-valuenow', '1')
   })
 
   it('after a reload sends what was left and does not show its candidate again, whatever the server lends', async () => {
@@ -80,12 +92,28 @@ describe('a grade on its way', () => {
     room.answerGrade = () => refusal('candidate-full', detail)
     const { user } = await open()
     await user.keyboard('a')
-    const alert = await screen.findByRole('alert')
-    expect(alert).toHaveTextContent(`SWS-1, your A: ${detail}`)
+    const line = await screen.findByRole('button', { name: '1 grade was not taken' })
+    expect(screen.getByRole('alert')).toHaveTextContent('1 grade was not taken.')
     expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '0')
-    await user.click(within(alert).getByRole('button', { name: 'I have read this' }))
-    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    await user.click(line)
+    const told = await screen.findByRole('dialog')
+    expect(told).toHaveTextContent(`SWS-1, your A: ${detail}`)
+    await user.click(within(told).getByRole('button', { name: 'I have read this' }))
+    expect(screen.queryByRole('dialog')).not.toBeInTheDocument()
+    expect(screen.queryByRole('button', { name: /not taken/ })).not.toBeInTheDocument()
     expect(grades()).toHaveLength(1)
+  })
+
+  it('is sent again when the person asks for it, and counts then', async () => {
+    room.answerGrade = () => refusal('candidate-full', 'Others have filled this candidate.')
+    const { user } = await open()
+    await user.keyboard('a')
+    await user.click(await screen.findByRole('button', { name: '1 grade was not taken' }))
+    room.answerGrade = () => taken()
+    await user.click(within(await screen.findByRole('dialog')).getByRole('button', { name: 'Send it again' }))
+    await waitFor(() => expect(grades()).toHaveLength(2))
+    expect(grades()[1].body?.id).toBe(grades()[0].body?.id)
+    await waitFor(() => expect(screen.queryByRole('button', { name: /not taken/ })).not.toBeInTheDocument())
   })
 
   it('shows in words why a correction was refused, goes on, and looks back at what stands', async () => {
@@ -98,7 +126,9 @@ describe('a grade on its way', () => {
     await user.keyboard('z')
     await look()
     await user.keyboard('n')
-    expect(await screen.findByRole('alert')).toHaveTextContent(`SWS-1, your N: ${detail}`)
+    await user.click(await screen.findByRole('button', { name: '1 grade was not taken' }))
+    expect(await screen.findByRole('dialog')).toHaveTextContent(`SWS-1, your N: ${detail}`)
+    await user.keyboard('{Escape}')
     expect(name()).toBe('SWS-2')
     expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '1')
     await user.keyboard('z')
@@ -119,7 +149,7 @@ describe('a grade on its way', () => {
     const { user } = await open()
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toMatch(/^1 waiting\. Somebody else has signed in in this browser/))
-    expect(screen.queryByRole('alert')).not.toBeInTheDocument()
+    expect(screen.getByRole('alert')).toBeEmptyDOMElement()
     room.answerGrade = () => taken()
     await waitFor(() => expect(saved()).toBe('All grades saved'), { timeout: 3000 })
   })

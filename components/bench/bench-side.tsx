@@ -5,7 +5,6 @@ import { KeyCap } from '@/components/ui/key-cap'
 import { GradeLadder } from './grade-ladder'
 import { letGo } from './let-go'
 import { MeasureButtons } from './measure-buttons'
-import { RefusedGrades } from './refused-grades'
 import { RemarkBox } from './remark-box'
 import { SaveLine } from './save-line'
 import { TagChooser } from './tag-chooser'
@@ -56,7 +55,6 @@ export function BenchSide({
           </div>
         </>
       ) : null}
-      <RefusedGrades refused={bench.snapshot.refused} onDismiss={bench.dismiss} />
       {/* One row whatever is said in it, so that the picture keeps its size. */}
       <div
         className={`flex items-center justify-between gap-x-3 md:contents short:flex short:flex-wrap ${bench.remarkOpen ? 'flex-wrap' : ''}`}
@@ -71,7 +69,7 @@ export function BenchSide({
           />
         ) : null}
         <div className="flex min-w-0 grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 short:mt-0 short:grow short:flex-row short:items-start short:justify-between">
-          <SaveLine snapshot={bench.snapshot} slug={slug} />
+          <SaveLine snapshot={bench.snapshot} slug={slug} onRefused={() => bench.setSheet('refused')} />
           <div className="order-last flex gap-x-4 whitespace-nowrap md:order-first short:order-last">
             <button
               type="button"

@@ -126,7 +126,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
           </div>
           <BenchSide bench={bench} light={light} keysOn={keys.on} slug={slug} />
         </main>
-        <BenchSheets sheet={bench.sheet} keys={keys} onSheet={bench.setSheet} />
+        <BenchSheets bench={bench} keys={keys} />
       </div>
     </KeyNames.Provider>
   )

@@ -2,6 +2,8 @@
 
 import { useEffect, useState } from 'react'
 import type { OutboxSnapshot } from './grade-outbox'
+import { letGo } from './let-go'
+import { refusedInWords } from './refused-words'
 
 /** A sentence is read out only when it has held for so long: each grade waits for a moment, and that is no news. */
 const SETTLED_MS = 1500
@@ -19,8 +21,19 @@ export function saveSentence({ waiting, trouble, kept }: OutboxSnapshot): string
   return `${parts[0]}. ${parts.slice(1).join(' ')}`
 }
 
-export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: string }) {
+/** Of fixed height, so that the picture keeps its size whatever is said. What was put aside stands behind one line. */
+export function SaveLine({
+  snapshot,
+  slug,
+  onRefused,
+}: {
+  snapshot: OutboxSnapshot
+  slug: string
+  onRefused: () => void
+}) {
   const sentence = saveSentence(snapshot)
+  const aside = refusedInWords(snapshot.refused)
+  const alarm = snapshot.refused.some(({ taken }) => !taken)
   const trouble = snapshot.waiting.length > 0 ? snapshot.trouble : null
   const [spoken, setSpoken] = useState('')
   useEffect(() => {
@@ -34,21 +47,37 @@ export function SaveLine({ snapshot, slug }: { snapshot: OutboxSnapshot; slug: s
         key={sentence}
         data-save-line
         title={sentence}
-        className={`${trouble?.signIn ? 'max-md:line-clamp-1' : 'max-md:line-clamp-2'} ${
+        className={`${trouble?.signIn || aside ? 'max-md:line-clamp-1' : 'max-md:line-clamp-2'} ${
           trouble || (snapshot.waiting.length > 0 && !snapshot.kept) ? 'text-alarm' : 'text-mute'
         }`}
       >
         {sentence}
       </p>
-      {trouble?.signIn ? (
-        // The whole page goes to sign in and comes back to the bench.
-        <a
-          href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/bench`)}`}
-          className="inline-flex min-h-6 items-center underline underline-offset-4 md:min-h-7"
-        >
-          Sign in and come back here
-        </a>
+      {trouble?.signIn || aside ? (
+        <span className="flex items-center justify-end gap-x-4 md:justify-start">
+          {trouble?.signIn ? (
+            // The whole page goes to sign in and comes back to the bench.
+            <a
+              href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/bench`)}`}
+              className="inline-flex min-h-6 items-center underline underline-offset-4 md:min-h-7"
+            >
+              Sign in and come back here
+            </a>
+          ) : null}
+          {aside ? (
+            <button
+              type="button"
+              onClick={letGo(onRefused)}
+              className={`inline-flex min-h-6 items-center whitespace-nowrap underline underline-offset-4 md:min-h-7 ${alarm ? 'text-alarm' : 'text-mute'}`}
+            >
+              {aside}
+            </button>
+          ) : null}
+        </span>
       ) : null}
+      <p role="alert" className="sr-only">
+        {alarm ? `${aside}.` : ''}
+      </p>
       <p aria-live="polite" className="sr-only">
         {spoken}
       </p>

@@ -37,7 +37,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const [session, dispatch] = useReducer(reduceSession, first, openSession)
   const [chooser, setChooser] = useState<Chooser>(null)
   const [remarkOpen, setRemarkOpen] = useState(false)
-  const [sheet, setSheet] = useState<'help' | 'settings' | null>(null)
+  const [sheet, setSheet] = useState<'help' | 'settings' | 'refused' | null>(null)
   const [tool, setTool] = useState<Tool | null>(null)
   const [resting, setResting] = useState(false)
   const [blinking, setBlinking] = useState(false)

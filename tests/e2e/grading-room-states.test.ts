@@ -165,9 +165,10 @@ it('the bench: a candidate with all that opens, waiting grades, a refusal, a bre
     }),
   )
   await giveGrade(page, 'b')
-  await page.getByRole('button', { name: 'I have read this' }).waitFor()
+  await page.getByRole('button', { name: '1 grade was not taken' }).waitFor()
   await lookAt(page, 'bench-refused')
   await page.unroute('**/grade')
+  await page.getByRole('button', { name: '1 grade was not taken' }).click()
   await page.getByRole('button', { name: 'I have read this' }).click()
 
   for (let n = 0; n < 20; n++) await giveGrade(page, 'n')
