@@ -13,6 +13,7 @@ import type { StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { GRADE_POINTS, gradesAmong, meanAndSpread } from '@/lib/science/agreement/grades'
 import { knownLabels, type KnownLabel } from '@/lib/work/matching/known-labels'
+import type { StandingRadius } from '@/lib/work/measuring/standing-radii'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { gradeClass, type GradeClass } from './grade-class'
@@ -44,6 +45,8 @@ export interface CatalogueEntry {
   sourceRedshift: number | null
   /** Objects of reference lists at its place, nearest first: 'Old ring (Marsh lenses, 0.21 arcsec)'; null without any. */
   knownAs: string | null
+  /** What people measured, combined; only where it is asked for, as for a file. */
+  radius?: StandingRadius | null
   enteredAt: IsoTime
 }
 

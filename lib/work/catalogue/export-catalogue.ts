@@ -6,6 +6,7 @@ import { forbidden } from '@/lib/platform/problems/problem'
 import { csvDocument } from '@/lib/science/formats/write-csv'
 import { votableDocument, type VotableMeta } from '@/lib/science/formats/write-votable'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
+import { standingMeasurements } from '@/lib/work/measuring/standing-measurements'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { catalogueEntries, type CatalogueEntry } from './catalogue-entries'
 import { CAUTION, EXPORT_COLUMNS } from './export-columns'
@@ -45,7 +46,7 @@ export async function exportCatalogue(
   }
   const rule = await ruleInForce(db, permit.campaign.id)
   const now = isoTime()
-  const rows = oneByOne(catalogueEntries(db, permit))
+  const rows = oneByOne(withRadii(db, permit))
   return {
     fileName: `${permit.campaign.slug}-catalogue-${now.slice(0, 10)}.${format}`,
     contentType: CONTENT_TYPE[format],
@@ -53,6 +54,17 @@ export async function exportCatalogue(
       format === 'csv'
         ? csvDocument(EXPORT_COLUMNS, rows)
         : votableDocument(votableMeta(permit, rule, now), EXPORT_COLUMNS, rows),
+  }
+}
+
+async function* withRadii(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+): AsyncGenerator<CatalogueEntry[], void, void> {
+  for await (const page of catalogueEntries(db, permit)) {
+    const ids = page.map(({ id }) => id)
+    const radii = await standingMeasurements(db, permit, ids)
+    yield page.map((entry) => ({ ...entry, radius: radii.get(entry.id) ?? null }))
   }
 }
 

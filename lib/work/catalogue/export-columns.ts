@@ -142,6 +142,30 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
     value: (entry) => entry.knownAs,
   },
   {
+    name: 'einstein_radius',
+    datatype: 'double',
+    unit: 'arcsec',
+    ucd: 'phys.angSize',
+    description: 'Einstein radius from measurements on the images, combined over the people who measured',
+    value: ({ radius }) => radius?.einsteinRadiusArcsec ?? null,
+  },
+  {
+    name: 'einstein_radius_error',
+    datatype: 'double',
+    unit: 'arcsec',
+    ucd: 'stat.error;phys.angSize',
+    description:
+      'Standard uncertainty of the Einstein radius, widened where people differ by more than their uncertainties',
+    value: ({ radius }) => radius?.errorArcsec ?? null,
+  },
+  {
+    name: 'n_measured',
+    datatype: 'int',
+    ucd: 'meta.number',
+    description: 'Number of people whose measurements the Einstein radius combines',
+    value: ({ radius }) => radius?.count ?? 0,
+  },
+  {
     name: 'entered_at',
     datatype: 'char',
     ucd: 'time.creation',

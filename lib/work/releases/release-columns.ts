@@ -10,10 +10,10 @@ function same(name: string, value: (entry: ReleaseEntry) => CellValue): Column<R
   return { ...known, value }
 }
 
-/** `name (list, 0.3 arcsec); …` */
+/** `name (list, 0.31 arcsec); …` */
 export const labelsInWords = (entry: Pick<ReleaseEntry, 'known_as'>): string | null =>
   fromJson(entry.known_as)
-    .map(({ name, list, separationArcsec }) => `${name} (${list}, ${separationArcsec.toFixed(1)} arcsec)`)
+    .map(({ name, list, separationArcsec }) => `${name} (${list}, ${separationArcsec.toFixed(2)} arcsec)`)
     .join('; ') || null
 
 /** The columns of a released catalogue in every format and in its cone search. Names are kept stable. */
@@ -53,37 +53,10 @@ export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
   same('reason', (entry) => entry.reason),
   same('remarks', (entry) => entry.remarks),
   same('tags', (entry) => entry.tags),
-  {
-    name: 'known_as',
-    datatype: 'unicodeChar',
-    ucd: 'meta.id.cross',
-    description: 'Objects of reference lists at this place, each with its list and separation, nearest first',
-    value: labelsInWords,
-  },
-  {
-    name: 'einstein_radius',
-    datatype: 'double',
-    unit: 'arcsec',
-    ucd: 'phys.angSize',
-    description: 'Einstein radius from measurements on the images, combined over the people who measured',
-    value: (entry) => entry.einstein_radius_arcsec,
-  },
-  {
-    name: 'einstein_radius_error',
-    datatype: 'double',
-    unit: 'arcsec',
-    ucd: 'stat.error;phys.angSize',
-    description:
-      'Standard uncertainty of the Einstein radius, widened where people differ by more than their uncertainties',
-    value: (entry) => entry.einstein_radius_error_arcsec,
-  },
-  {
-    name: 'n_measured',
-    datatype: 'int',
-    ucd: 'meta.number',
-    description: 'Number of people whose measurements the Einstein radius combines',
-    value: (entry) => entry.n_measured,
-  },
+  same('known_as', labelsInWords),
+  same('einstein_radius', (entry) => entry.einstein_radius_arcsec),
+  same('einstein_radius_error', (entry) => entry.einstein_radius_error_arcsec),
+  same('n_measured', (entry) => entry.n_measured),
   same('lens_redshift', (entry) => entry.lens_redshift),
   same('source_redshift', (entry) => entry.source_redshift),
   same('entered_at', (entry) => entry.entered_at),
