@@ -14,6 +14,7 @@ import { useKeys } from '@/components/bench/use-keys'
 import { runLight } from '@/components/light/light-keys'
 import { LightSection } from '@/components/light/light-section'
 import { useLight } from '@/components/light/use-light'
+import { ButtonLink } from '@/components/ui/button'
 import { KeyNames } from '@/components/ui/key-names'
 import type { PracticeState } from '@/lib/work/calibration/practice'
 import { PracticeEnd } from './practice-end'
@@ -87,13 +88,13 @@ export function PracticeRoom({ slug, campaignName, personId, lead, first }: Prac
                 <span className="text-small font-semibold">Practice</span>
                 <span className="whitespace-nowrap text-note text-mute">
                   <span className="figures">{answered}</span>
-                  {state.wanted > 0 ? (
+                  {state.wanted > answered ? (
                     <>
                       {' '}
                       of <span className="figures">{state.wanted}</span> asked for
                     </>
                   ) : (
-                    ' answered'
+                    ` answered${state.wanted > 0 ? `, ${state.wanted} asked for` : ''}`
                   )}
                 </span>
               </div>
@@ -143,6 +144,14 @@ export function PracticeRoom({ slug, campaignName, personId, lead, first }: Prac
                   Practice is yours alone: answers count nowhere and nobody else sees them.
                 </p>
               </>
+            ) : null}
+            {state.wanted > 0 && answered >= state.wanted && stamp ? (
+              <p className="flex flex-wrap items-center gap-x-3 text-small">
+                That was what this campaign asks for. More is up to you.
+                <ButtonLink href={`/campaigns/${slug}/bench`} prefetch={false}>
+                  To the bench
+                </ButtonLink>
+              </p>
             ) : null}
             {practice.trouble ? (
               <p role="alert" className="text-small text-alarm">

@@ -31,9 +31,9 @@ async function throughDatabase(candidates: number, mode: QueueMode): Promise<str
     `${name}: next five ${spread(run.next)}; ${againstAim(at(run.next, 0.99), AIM_MS, 'ms')}`,
     `${name}: next five of who has graded ${(candidates / 20).toLocaleString('en')} in order, ${spread(run.nextOfDeepGrader)}`,
     `${name}: a grade recorded, synchronous=FULL, ${spread(run.grade)}; ${againstAim(at(run.grade, 0.99), AIM_MS, 'ms')}`,
-    `${name}: first asked after the start ${spread(run.firstAsked)}`,
+    `${name}: first asked after the start ${spread(run.firstAsked)}; ${againstAim(at(run.firstAsked, 0.99), AIM_MS, 'ms')}`,
     `${name}: fifty in one instant, ${run.burst.all.toFixed(0)} ms until the last has an answer, ` +
-      `${run.burst.processor.toFixed(1)} ms of the processor each`,
+      `${run.burst.processor.toFixed(1)} ms of the processor each; ${againstAim(run.burst.all, AIM_MS, 'ms')}`,
     `${name}: ${run.refused} refused, ${run.aboveWanted} above their wanted number; filled in ${run.fillSeconds.toFixed(0)} s`,
     ...run.plans.map((plan) => `    ${plan}`),
   ]

@@ -32,6 +32,9 @@ it.each([
   ['calibrationPercent', '60', 'The share of calibration stamps is at most 50 %.'],
   ['repeatPercent', '21', 'The share of repeats is at most 20 %.'],
   ['practiceWanted', '2.5', 'Practice is a whole number of stamps.'],
+  ['calibrationPercent', '', 'The share of calibration stamps is a number of per cent.'],
+  ['repeatPercent', ' ', 'The share of repeats is a number of per cent.'],
+  ['practiceWanted', '', 'Practice is a number of stamps; 0 asks for none.'],
   ['queueOrder', 'by name', 'The order is one of: most needed, score, shuffled.'],
 ])('refuses %s = %s with a sentence', (name, value, sentence) => {
   const messages = LookingInput.safeParse({ ...FORM, [name]: value }).error?.issues.map(({ message }) => message)

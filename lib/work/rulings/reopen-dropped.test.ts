@@ -4,6 +4,7 @@ import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { lendNext } from '@/lib/work/queue/lend-next'
 import { makeSheetScenario, type SheetScenario } from '@/lib/work/sheet/_sheet-scenario'
 import { changeSheet } from '@/lib/work/sheet/change-sheet'
+import { sendOn } from '@/lib/work/sheet/send-on'
 import { countersAndRecount } from '@/tests/_support/recount-queue'
 import { ruleOnCandidate } from './rule-on-candidate'
 import type { RulingInput } from './ruling-input'
@@ -66,6 +67,19 @@ it('holds when the first pass was off meanwhile', async () => {
   await rule(0, 'open')
   await changeSheet(scenario.db, await lead(), { usesSheet: true, passers: [scenario.graders[0].id] })
   expect(await lent()).toEqual([scenario.ids[0]])
+})
+
+it('a lead sends on without a ruling too, once, and the consensus is asked for at once', async () => {
+  await scenario.db.deleteFrom('job').execute()
+  await sendOn(scenario.db, await lead(), scenario.ids[0])
+  expect(await scenario.stateOf(0)).toBe('sent on')
+  const job = await scenario.db.selectFrom('job').select(['kind', 'run_after']).executeTakeFirstOrThrow()
+  expect(job.kind).toBe('consensus')
+  expect(Date.parse(job.run_after)).toBeLessThanOrEqual(Date.now())
+  await expect(sendOn(scenario.db, await lead(), scenario.ids[0])).rejects.toMatchObject({
+    status: 409,
+    type: 'not-dropped',
+  })
 })
 
 it('leaves it dropped when somebody rules who may not', async () => {

@@ -4,7 +4,9 @@ import type { Kysely } from 'kysely'
 import { insertMarks, listCandidatesToPass, setFirstPass } from '@/db/queries/sheet'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
+import { isoTime } from '@/lib/platform/clock'
 import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
+import { conflict } from '@/lib/platform/problems/problem'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 
 /**
@@ -32,4 +34,16 @@ export async function sendOnDropped(
   await setFirstPass(transaction, [candidateId], 'sent on')
   if (campaign.uses_sheet === 1) await requestConsensus(transaction, campaign.id)
   return true
+}
+
+/** A lead's own word that a candidate goes to the bench; the consensus follows at once. @throws Problem 409 `not-dropped` */
+export async function sendOn(db: Kysely<DB>, permit: CampaignPermit<'lead'>, candidateId: number): Promise<void> {
+  const sent = await db
+    .transaction()
+    .execute((transaction) => sendOnDropped(transaction, permit, candidateId, isoTime()))
+  if (!sent)
+    throw conflict(
+      'not-dropped',
+      'The first pass has not dropped it, or somebody has sent it on meanwhile. Load the page again.',
+    )
 }

@@ -118,7 +118,8 @@ export function faultsOfRanges(ranges: PaintingRanges): { name: keyof PaintingRa
     const value = ranges[name]
     const [low, high] = typeof value === 'number' ? [value, value] : value
     if (!(low >= least && high <= most)) return [{ name, reason: `Lies between ${least} and ${most}.` }]
-    if (low > high) return [{ name, reason: 'The lower end comes first.' }]
+    if (low > high)
+      return [{ name, reason: `From ${low} to ${high} is the wrong way round: the lower end comes first.` }]
     return []
   })
 }

@@ -1,6 +1,5 @@
 'use server'
 
-import { randomUUID } from 'node:crypto'
 import { revalidatePath } from 'next/cache'
 import { permitGrader, permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
@@ -13,7 +12,7 @@ import { sentInWords } from '@/lib/work/discussion/sent-in-words'
 import { withdrawAsk } from '@/lib/work/discussion/withdraw-ask'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { parseRulingForm } from '@/lib/work/rulings/ruling-input'
-import { recordMarks } from '@/lib/work/sheet/record-marks'
+import { sendOn } from '@/lib/work/sheet/send-on'
 
 /** Rules on a candidate from its own page, which stays. */
 export async function ruleOnCandidateAction(
@@ -91,8 +90,7 @@ export async function sendOnAction(
 ): Promise<FormState> {
   try {
     const { db, permit } = await permitLead(slug)
-    const { refused } = await recordMarks(db, permit, [{ id: randomUUID(), candidate: candidateId, mark: 'sent on' }])
-    if (refused[0]) return { message: refused[0].sentence }
+    await sendOn(db, permit, candidateId)
     revalidatePath(`/campaigns/${slug}`, 'layout')
     return { done: 'Sent on: it comes to the bench.' }
   } catch (error) {
