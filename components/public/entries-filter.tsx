@@ -61,7 +61,7 @@ export function EntriesFilter({
           </label>
         </>
       ) : null}
-      <label className={`${label} w-full sm:w-56`}>
+      <label className={`${label} min-w-44 flex-1 sm:max-w-56`}>
         Near a position, degrees or hours
         <input
           type="text"

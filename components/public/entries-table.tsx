@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react'
 import { counted } from '@/components/campaigns/in-words'
 import { VoteStrip } from '@/components/ui/vote-strip'
 import { formatDeclination, formatRightAscension } from '@/lib/science/sky/coordinates'
@@ -9,7 +10,7 @@ import { orderParameters, pageParameters } from './table-parameters'
 
 interface Head {
   order: TableQuery['order']
-  label: string
+  label: ReactNode
   /** For who cannot see the unit beside it. */
   about?: string
   className?: string
@@ -51,13 +52,19 @@ export function EntriesTable({
         },
     {
       order: 'radius',
-      label: 'θE',
+      label: (
+        <span>
+          θ<sub>E</sub>
+        </span>
+      ),
       about: 'Einstein radius, arcseconds',
       className: 'text-right max-lg:hidden',
       fromHigh: true,
     },
   ]
   const { rows } = table
+  const hasLabels = rows.some(({ knownAs }) => knownAs.length > 0)
+  const hasRadii = query.order === 'radius' || rows.some(({ einsteinRadiusArcsec: radius }) => radius !== null)
   if (rows.length === 0) {
     return (
       <p className="border-t border-line py-8 text-mute">Nothing passes these filters. Change or clear them above.</p>
@@ -74,20 +81,24 @@ export function EntriesTable({
             <th scope="col" className="w-12 py-2 pr-3 font-normal">
               <span className="sr-only">Stamp</span>
             </th>
-            {heads.map((head) => (
-              <SortHead key={head.order} head={head} query={query} links={links} sortable={table.sortable} />
-            ))}
+            {heads
+              .filter(({ order }) => order !== 'radius' || hasRadii)
+              .map((head) => (
+                <SortHead key={head.order} head={head} query={query} links={links} sortable={table.sortable} />
+              ))}
             <th scope="col" className="px-3 py-2 font-semibold max-sm:hidden">
               Grades
             </th>
-            <th scope="col" className="py-2 pl-3 font-semibold max-lg:hidden">
-              Known as
-            </th>
+            {hasLabels ? (
+              <th scope="col" className="py-2 pl-3 font-semibold max-lg:hidden">
+                Known as
+              </th>
+            ) : null}
           </tr>
         </thead>
         <tbody>
           {rows.map((row) => (
-            <Row key={row.key} row={row} links={links} byReliability={byReliability} />
+            <Row key={row.key} {...{ row, links, byReliability, hasLabels, hasRadii }} />
           ))}
         </tbody>
       </table>
@@ -129,7 +140,19 @@ function SortHead({
   )
 }
 
-function Row({ row, links, byReliability }: { row: EntryRow; links: ReleaseLinks; byReliability: boolean }) {
+function Row({
+  row,
+  links,
+  byReliability,
+  hasLabels,
+  hasRadii,
+}: {
+  row: EntryRow
+  links: ReleaseLinks
+  byReliability: boolean
+  hasLabels: boolean
+  hasRadii: boolean
+}) {
   const href = links.entry(row.key)
   const ra = formatRightAscension(row.raDeg)
   const dec = formatDeclination(row.decDeg)
@@ -166,15 +189,19 @@ function Row({ row, links, byReliability }: { row: EntryRow; links: ReleaseLinks
       <td className="figures px-3 py-1.5 whitespace-nowrap text-mute max-md:hidden">{dec}</td>
       <td className="figures px-3 py-1.5 font-semibold">{row.class ?? '–'}</td>
       <td className="figures px-3 py-1.5 text-right max-sm:hidden">{worth ?? '–'}</td>
-      <td className="figures px-3 py-1.5 text-right max-lg:hidden">
-        {row.einsteinRadiusArcsec === null ? '–' : `${row.einsteinRadiusArcsec.toFixed(2)}″`}
-      </td>
+      {hasRadii ? (
+        <td className="figures px-3 py-1.5 text-right max-lg:hidden">
+          {row.einsteinRadiusArcsec === null ? '–' : `${row.einsteinRadiusArcsec.toFixed(2)}″`}
+        </td>
+      ) : null}
       <td className="px-3 py-1.5 max-sm:hidden">
         <VoteStrip votes={row.votes} dense />
       </td>
-      <td className="max-w-52 py-1.5 pl-3 text-note max-lg:hidden">
-        {row.knownAs.map(({ name }) => name).join(', ') || <span className="text-mute">–</span>}
-      </td>
+      {hasLabels ? (
+        <td className="max-w-52 py-1.5 pl-3 text-note max-lg:hidden">
+          {row.knownAs.map(({ name }) => name).join(', ') || <span className="text-mute">–</span>}
+        </td>
+      ) : null}
     </tr>
   )
 }

@@ -61,7 +61,7 @@ export function EntryPage({
             {entry.mean === null ? null : (
               <Fact name="Mean of grade points">
                 {entry.mean.toFixed(2)}
-                {entry.spread === null ? '' : ` ± ${entry.spread.toFixed(2)}`}
+                {entry.spread === null ? '' : `, spread ${entry.spread.toFixed(2)}`}
               </Fact>
             )}
             {entry.probability === null ? null : <Fact name="Lens probability">{entry.probability.toFixed(4)}</Fact>}

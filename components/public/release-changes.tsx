@@ -15,7 +15,12 @@ export function ReleaseChanges({ contents, links }: { contents: ReleaseContents;
         <p className="text-small text-mute">Nothing of the catalogue has changed.</p>
       ) : (
         <>
-          <div className="relative overflow-x-auto">
+          <div
+            className="relative overflow-x-auto"
+            role="region"
+            aria-label={`Changes since release ${before}, scrolls sideways`}
+            tabIndex={0}
+          >
             <table className="w-full max-w-4xl border-collapse text-small">
               <caption className="sr-only">Changes since release {before}</caption>
               <thead>
@@ -30,10 +35,10 @@ export function ReleaseChanges({ contents, links }: { contents: ReleaseContents;
               <tbody>
                 {changes.map(({ name, designation, change, before: from, after }, at) => (
                   <tr key={at} className="border-b border-line align-top">
-                    <th scope="row" className="figures py-1.5 pr-4 text-left font-normal">
+                    <th scope="row" className="figures py-1.5 pr-4 text-left font-normal whitespace-nowrap">
                       {designation ?? name}
                     </th>
-                    <td className="py-1.5 pr-4">{change}</td>
+                    <td className="py-1.5 pr-4 whitespace-nowrap">{change}</td>
                     <td className="py-1.5 pr-4 text-mute">{from ?? '–'}</td>
                     <td className="py-1.5">{after ?? '–'}</td>
                   </tr>

@@ -35,7 +35,7 @@ export function ReleaseNotices({ head, links }: { head: ReleaseHead; links: Rele
           : {corrects.statement}
         </Said>
       ) : null}
-      {newest !== null && !isWithdrawn && newest > head.number ? (
+      {newest !== null && !isWithdrawn && newest > head.number && !notices.some(({ number }) => number === newest) ? (
         <Said tone="edge">
           A newer release stands:{' '}
           <a href={links.other(newest)} className={link}>

@@ -72,10 +72,10 @@ export function ReleasePage({ head, contents, sky, table, query, links, addresse
           <TablePages table={table} query={query} links={links} />
         </section>
       )}
+      <Downloads files={contents.files} links={links} />
       <div className="grid gap-x-12 gap-y-10 lg:grid-cols-2">
-        <Downloads files={contents.files} links={links} />
-        <div className="flex min-w-0 flex-col gap-10">
-          <Cite head={head} links={links} address={addresses.release} />
+        <Cite head={head} links={links} address={addresses.release} />
+        <div className="min-w-0">
           <MachineAccess
             addresses={addresses}
             sample={first ? { raDeg: first.raDeg, decDeg: first.decDeg } : null}

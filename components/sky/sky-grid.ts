@@ -87,12 +87,28 @@ function regionGrid({ projection, centre, reachDeg }: SkyProjection): SkyGridLin
       'x',
       44,
     ).map((label) => ({ ...label, y: FRAME.bottom + 13 })),
-    dec: spread(
-      dec.flatMap(({ at, coordinates }) => crossing(projection, coordinates, 'x', FRAME.left, decText(at, decStep))),
-      'y',
-      14,
-    ).map((label) => ({ ...label, x: FRAME.left - 4 })),
+    dec: hasPole
+      ? alongMeridian(projection, centre.decDeg, dec, decStep)
+      : spread(
+          dec.flatMap(({ at, coordinates }) =>
+            crossing(projection, coordinates, 'x', FRAME.left, decText(at, decStep)),
+          ),
+          'y',
+          14,
+        ).map((label) => ({ ...label, x: FRAME.left - 4 })),
   }
+}
+
+/** Round a pole the circles of declination are labelled along the meridian that goes down from it. */
+function alongMeridian(projection: GeoProjection, poleDec: number, dec: readonly Line[], decStep: number): GridLabel[] {
+  const lowest = Array.from({ length: 24 }, (_, k) => k * 15).toSorted(
+    (a, b) => (projection([b, poleDec > 0 ? 85 : -85])?.[1] ?? 0) - (projection([a, poleDec > 0 ? 85 : -85])?.[1] ?? 0),
+  )[0]
+  return dec.flatMap(({ at }) => {
+    const [x, y] = projection([lowest, at]) ?? [0, 0]
+    const isInside = y > FRAME.top && y < FRAME.bottom - 6 && x > FRAME.left + 30 && x < FRAME.right
+    return isInside && Math.abs(at) < 90 ? [{ text: decText(at, decStep), x: x - 3, y }] : []
+  })
 }
 
 function multiples([from, to]: [number, number], stepDeg: number): number[] {

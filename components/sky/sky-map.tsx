@@ -1,5 +1,6 @@
 import { geoPath } from 'd3-geo'
 import type { CellBounds } from '@/lib/science/sky/equal-area-grid'
+import type { SkyPosition } from '@/lib/science/sky/separation'
 import type { SkyExtent } from '@/lib/science/sky/sky-extent'
 import { cellPath, densityStep } from './sky-marks'
 import { skyGrid } from './sky-grid'
@@ -29,7 +30,7 @@ const FILLS = { A: 'var(--grade-a)', B: 'var(--grade-b)', C: 'var(--grade-c)' }
  * they are many. North is up and right ascension grows to the left.
  */
 export function SkyMap({ id, title, marks }: { id: string; title: string; marks: SkyMarks }) {
-  const sky = skyProjection(marks.extent)
+  const sky = skyProjection(marks.extent, placesOf(marks))
   const grid = skyGrid(sky)
   const path = geoPath(sky.projection).digits(1)
   const height = sky.wholeSky ? 222 : HEIGHT
@@ -58,7 +59,14 @@ export function SkyMap({ id, title, marks }: { id: string; title: string; marks:
       )}
       {marks.kind === 'cells' ? <Cells marks={marks} project={(cell) => cellPath(sky.projection, cell)} /> : null}
       <path d={grid.path} fill="none" stroke="var(--edge)" strokeOpacity="0.45" strokeWidth="0.6" />
-      <g fill="var(--mute)" aria-hidden="true">
+      <g
+        fill="var(--text)"
+        stroke="var(--page)"
+        strokeWidth="3"
+        strokeLinejoin="round"
+        paintOrder="stroke"
+        aria-hidden="true"
+      >
         {grid.ra.map(({ text, x, y }) => (
           <text key={`${text} ${x.toFixed(0)}`} x={x.toFixed(1)} y={y.toFixed(1)} textAnchor="middle">
             {text}
@@ -139,6 +147,14 @@ function Cells({
       )}
     </g>
   )
+}
+
+function* placesOf(marks: SkyMarks): Generator<SkyPosition> {
+  if (marks.kind === 'points') return yield* marks.points
+  for (const { westRaDeg, eastRaDeg, southDecDeg, northDecDeg } of marks.cells) {
+    yield { raDeg: westRaDeg, decDeg: southDecDeg }
+    yield { raDeg: eastRaDeg, decDeg: northDecDeg }
+  }
 }
 
 /** The map in a sentence, for who cannot see it. */

@@ -2,7 +2,7 @@ import { geoPath, type GeoProjection } from 'd3-geo'
 import type { CellBounds } from '@/lib/science/sky/equal-area-grid'
 
 /** Along a border of equal declination, which is no great circle, points this far apart at most. */
-const ALONG_DEG = 2
+const ALONG_DEG = 5
 
 /** The outline of a cell; empty where it lies outside of the map. */
 export function cellPath(projection: GeoProjection, bounds: CellBounds): string {

@@ -1,4 +1,5 @@
 import { geoAzimuthalEqualArea, geoAzimuthalEqualAreaRaw, geoProjection, type GeoProjection } from 'd3-geo'
+import type { SkyPosition } from '@/lib/science/sky/separation'
 import type { SkyExtent } from '@/lib/science/sky/sky-extent'
 
 /** Of the drawing, in its own units. The right and the bottom leave room for labels of the grid. */
@@ -11,7 +12,7 @@ export interface SkyProjection {
   wholeSky: boolean
   /** degrees of right ascension and declination in the middle */
   centre: { raDeg: number; decDeg: number }
-  /** half the side that the frame shows, about; 90 for the whole sky */
+  /** half the height that the frame shows, about; 90 for the whole sky */
   reachDeg: number
 }
 
@@ -31,39 +32,59 @@ function hammerRaw(lambda: number, phi: number): [number, number] {
 }
 
 /**
- * An equal-area projection that shows an extent of the sky: Lambert's zenithal one round its centre (ZEA, section 5.1.7), or the whole
- * sky. Right ascension grows to the left, as seen from inside the sphere; north is up.
+ * An equal-area projection that shows an extent of the sky: Lambert's zenithal one round its centre (ZEA, section 5.1.7), as large as the
+ * places in it allow, or the whole sky. Right ascension grows to the left, as seen from inside the sphere; north is up.
+ * @param places degrees, of what is to be seen
  */
-export function skyProjection(extent: SkyExtent | null): SkyProjection {
-  const { left, top, right, bottom } = FRAME
-  if (extent === null || extent.radiusDeg > WIDEST_REGION_DEG) {
-    const raDeg = extent && Math.cos((extent.centre.raDeg * Math.PI) / 180) < 0 ? 180 : 0
-    const projection = geoProjection(hammerRaw)
-      .rotate([-raDeg, 0])
-      .reflectX(true)
-      .precision(0.3)
-      .fitExtent(
-        [
-          [6, 14],
-          [WIDTH - 6, 212],
-        ],
-        { type: 'Sphere' },
-      )
-    return { projection, wholeSky: true, centre: { raDeg, decDeg: 0 }, reachDeg: 90 }
-  }
+export function skyProjection(extent: SkyExtent | null, places: Iterable<SkyPosition>): SkyProjection {
+  if (extent === null || extent.radiusDeg > WIDEST_REGION_DEG) return wholeSky(extent)
   const { raDeg, decDeg } = extent.centre
-  const reachDeg = Math.max(LEAST_REACH_DEG, extent.radiusDeg * MARGIN)
-  // Lambert's radius: r = 2 sin(theta / 2).
-  const scale = (bottom - top) / 2 / (2 * Math.sin((reachDeg * Math.PI) / 360))
-  const projection = geoAzimuthalEqualArea()
-    .rotate([-raDeg, -decDeg])
-    .reflectX(true)
+  const { left, top, right, bottom } = FRAME
+  const projection = geoAzimuthalEqualArea().rotate([-raDeg, -decDeg]).reflectX(true).scale(1).translate([0, 0])
+  const bounds = boundsOf(projection, places)
+  // Lambert's radius: r = 2 sin(theta / 2), which is theta in radians where that is small.
+  const least = (LEAST_REACH_DEG * Math.PI) / 180
+  const halfWidth = Math.max(least, ((bounds.right - bounds.left) / 2) * MARGIN)
+  const halfHeight = Math.max(least, ((bounds.bottom - bounds.top) / 2) * MARGIN)
+  const scale = Math.min((right - left) / 2 / halfWidth, (bottom - top) / 2 / halfHeight)
+  projection
     .scale(scale)
-    .translate([(left + right) / 2, (top + bottom) / 2])
-    .precision(0.3)
+    .translate([
+      (left + right) / 2 - (scale * (bounds.left + bounds.right)) / 2,
+      (top + bottom) / 2 - (scale * (bounds.top + bounds.bottom)) / 2,
+    ])
     .clipExtent([
       [left, top],
       [right, bottom],
     ])
-  return { projection, wholeSky: false, centre: { raDeg, decDeg }, reachDeg }
+  const [middleRa, middleDec] = projection.invert?.([(left + right) / 2, (top + bottom) / 2]) ?? [raDeg, decDeg]
+  const reachDeg = (2 * Math.asin(Math.min(1, (bottom - top) / 4 / scale)) * 180) / Math.PI
+  return { projection, wholeSky: false, centre: { raDeg: middleRa, decDeg: middleDec }, reachDeg }
+}
+
+function wholeSky(extent: SkyExtent | null): SkyProjection {
+  const raDeg = extent && Math.cos((extent.centre.raDeg * Math.PI) / 180) < 0 ? 180 : 0
+  const projection = geoProjection(hammerRaw)
+    .rotate([-raDeg, 0])
+    .reflectX(true)
+    .fitExtent(
+      [
+        [6, 14],
+        [WIDTH - 6, 212],
+      ],
+      { type: 'Sphere' },
+    )
+  return { projection, wholeSky: true, centre: { raDeg, decDeg: 0 }, reachDeg: 90 }
+}
+
+function boundsOf(projection: GeoProjection, places: Iterable<SkyPosition>) {
+  const bounds = { left: Infinity, right: -Infinity, top: Infinity, bottom: -Infinity }
+  for (const { raDeg, decDeg } of places) {
+    const [x, y] = projection([raDeg, decDeg]) ?? [0, 0]
+    bounds.left = Math.min(bounds.left, x)
+    bounds.right = Math.max(bounds.right, x)
+    bounds.top = Math.min(bounds.top, y)
+    bounds.bottom = Math.max(bounds.bottom, y)
+  }
+  return bounds.left <= bounds.right ? bounds : { left: 0, right: 0, top: 0, bottom: 0 }
 }

@@ -163,3 +163,14 @@ export function viewsOf(recipe: Recipe, bands: string[]): ViewName[] {
 /** The label of a view by its key alone, for pictures whose recipe is not at hand; a key that is not known stands for itself. */
 export const viewLabel = (key: string): string =>
   COMBINED_VIEWS.find((view) => view.key === key)?.label ?? bandOfView(key) ?? key
+
+/** The optical and near-infrared filters whose order everybody in the trade knows, shortest wavelength first. From memory. */
+const BAND_ORDER = ['u', 'g', 'r', 'i', 'z', 'y', 'Y', 'J', 'H', 'K']
+
+/** Where a view stands among others by its key alone: those of several bands as in the default recipe, then bands by wavelength. */
+export function viewPlace(key: string): number {
+  const combined = COMBINED_VIEWS.findIndex((view) => view.key === key)
+  if (combined >= 0) return combined
+  const band = BAND_ORDER.indexOf(bandOfView(key) ?? '')
+  return COMBINED_VIEWS.length + (band >= 0 ? band : BAND_ORDER.length)
+}

@@ -1,5 +1,6 @@
 import type { ReleaseEntry, ReleasedLabel } from '@/db/schema/releases'
 import { fromJson, type Json } from '@/db/schema/values'
+import { viewPlace } from '@/lib/science/imaging/recipe'
 
 export interface Votes {
   A: number
@@ -78,7 +79,9 @@ export function entryDetail(row: ReleaseEntry): EntryDetail {
     lensRedshift: row.lens_redshift,
     sourceRedshift: row.source_redshift,
     enteredAt: row.entered_at,
-    stamps: Object.entries(fromJson(row.stamps)).map(([view, sha256]) => ({ view, sha256 })),
+    stamps: Object.entries(fromJson(row.stamps))
+      .map(([view, sha256]) => ({ view, sha256 }))
+      .toSorted((a, b) => viewPlace(a.view) - viewPlace(b.view)),
   }
 }
 

@@ -19,7 +19,7 @@ export type ReleaseSky = { extent: SkyExtent | null; entries: number } & (
 /** Beyond this many, single points would hide how dense they lie. */
 export const MOST_POINTS = 2000
 /** A survey has about this many cells across. */
-const CELLS_ACROSS = 24
+const CELLS_ACROSS = 20
 const WHOLE_SKY_RADIUS_DEG = 90
 const PAGE = 5000
 const KEPT = 20
