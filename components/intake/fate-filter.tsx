@@ -25,7 +25,7 @@ export function FateFilter({
           type="button"
           aria-pressed={chosen === fate}
           onClick={() => onChoose(fate)}
-          className="inline-flex min-h-8 items-center gap-2 rounded-control border border-edge/40 px-2.5 text-small text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text"
+          className="inline-flex min-h-8 items-center gap-2 pointer-coarse:min-h-11 rounded-control border border-edge/40 px-2.5 text-small text-mute hover:text-text aria-pressed:border-text aria-pressed:bg-raise aria-pressed:text-text"
         >
           {label}{' '}
           <span className={`figures text-note ${fate === 'refused' && count > 0 ? 'text-alarm' : ''}`}>

@@ -42,7 +42,7 @@ export function FileList({
           value={filter.search}
           maxLength={255}
           onChange={(event) => narrow({ search: event.target.value })}
-          className="min-h-8 w-44 rounded-control border border-edge bg-well px-2.5 text-small placeholder:text-mute"
+          className="min-h-8 w-44 pointer-coarse:min-h-11 pointer-coarse:w-full rounded-control border border-edge bg-well px-2.5 text-small placeholder:text-mute"
         />
         <div className="flex gap-3 md:ml-auto">{children}</div>
       </div>

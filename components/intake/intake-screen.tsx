@@ -109,8 +109,13 @@ export function IntakeScreen({
           {inHand ? null : (
             <div className="flex flex-col gap-3">
               <DropZone isBack={hasLooked} onChosen={(chosen) => void choose(chosen)} />
-              <label className="flex items-center gap-2 text-small text-mute">
-                <input type="checkbox" checked={atOnce} onChange={(event) => setAtOnce(event.target.checked)} />
+              <label className="flex items-center gap-2 text-small text-mute pointer-coarse:min-h-11">
+                <input
+                  type="checkbox"
+                  checked={atOnce}
+                  onChange={(event) => setAtOnce(event.target.checked)}
+                  className="size-4 accent-text pointer-coarse:size-5"
+                />
                 Send at once, without looking at the matches first
               </label>
             </div>
@@ -146,7 +151,7 @@ export function IntakeScreen({
           <a
             href={`/api/campaigns/${slug}/files/problems.csv`}
             download
-            className="inline-flex min-h-8 items-center gap-1.5 rounded-control border border-edge/40 px-2.5 text-small text-mute hover:border-edge hover:text-text"
+            className="inline-flex min-h-8 items-center gap-1.5 rounded-control border pointer-coarse:min-h-11 border-edge/40 px-2.5 text-small text-mute hover:border-edge hover:text-text"
           >
             <Download size={15} aria-hidden="true" />
             Problems as CSV
