@@ -132,13 +132,13 @@ const LISTING = [
     'decided_by',
   ].map(
     (column) =>
-      `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id) where entered_at is not null`,
+      `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id, entered_at) where entered_at is not null`,
   ),
   ...['ra_deg', 'dec_deg', 'lens_redshift', 'source_redshift', 'designation', 'probability'].map(
     (column) =>
-      `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id) where entered_at is not null`,
+      `create index listing_as_${column} on listing (campaign_id, ${column}, candidate_id, entered_at) where entered_at is not null`,
   ),
-  'create index listing_as_name_key on listing (campaign_id, name_key, candidate_id) where entered_at is not null',
+  'create index listing_as_name_key on listing (campaign_id, name_key, candidate_id, entered_at) where entered_at is not null',
   // Few grades have one, and people search for what is in them.
   'create index grade_remark on grade (campaign_id, candidate_id, person_id, id, occasion, remark) where remark is not null',
 

@@ -2,7 +2,6 @@ import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateState, StateCause } from '../schema/intake'
 import { among, inCampaign } from './by-ids'
-import { isOwnJudgement } from './grading'
 import { isShownTo } from './verdicts'
 
 /** Which candidates of a campaign a list may draw on, and of which of them it may use what people judged. */
@@ -37,14 +36,11 @@ export interface CandidateRow {
   enteredAt: string | null
 }
 
-/**
- * Whether the reader may see what was judged of this candidate. A list made once costs what the reader has graded, not what the
- * campaign holds: hence the index of the reader's grades, and not that of the candidate's.
- */
-function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBool> {
+/** Whether the reader may see what was judged of a candidate, whose id stands in `column`. */
+export function isRevealed({ campaignId, judgedBy }: CandidateScope, column = 'candidate.id'): RawBuilder<SqlBool> {
   if (judgedBy === null) return sql<SqlBool>`true`
-  return sql<SqlBool>`candidate.id in (select own.candidate_id from grade own indexed by grade_person
-    where own.campaign_id = ${campaignId} and own.person_id = ${judgedBy} and ${isOwnJudgement(judgedBy)})`
+  return sql<SqlBool>`${sql.ref(column)} in (select judged.candidate_id from judged
+    where judged.campaign_id = ${campaignId} and judged.person_id = ${judgedBy})`
 }
 
 function candidates(db: Kysely<DB>, scope: CandidateScope) {

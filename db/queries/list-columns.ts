@@ -49,11 +49,13 @@ const remarked =
     const isTold =
       judgedBy === null
         ? sql`true`
-        : sql`(exists (select 1 from candidate where candidate.id = g.candidate_id and candidate.truth is null)
+        : sql`g.candidate_id in (select judged.candidate_id from judged
+            where judged.campaign_id = ${campaignId} and judged.person_id = ${judgedBy})
+          and (exists (select 1 from candidate where candidate.id = g.candidate_id and candidate.truth is null)
             or ${isShown(judgedBy)})`
     return sql<SqlBool>`l.candidate_id in (select g.candidate_id from grade g
       where g.campaign_id = ${campaignId} and g.remark is not null and g.remark like ${part} escape '\\'
-        and ${stands} and ${isTold})`
+        and ${isTold} and ${stands})`
   }
 
 const shownOfStamp = (judgedBy: number) => sql`g.candidate_id = l.candidate_id and ${stands} and ${isShown(judgedBy)}`

@@ -1,6 +1,6 @@
 import { sql, type Kysely, type RawBuilder, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
-import type { CandidateScope } from './catalogue'
+import { isRevealed as isRevealedAt, type CandidateScope } from './catalogue'
 import { among } from './by-ids'
 import { isWithin, meets, type ColumnCondition, type SkyCone } from './list-conditions'
 import { listColumns, type ListColumnName } from './list-columns'
@@ -29,11 +29,7 @@ export interface ListOrder {
 }
 
 /** Whether the reader may see what was judged of the candidate `l`. */
-export function isRevealed({ campaignId, judgedBy }: CandidateScope): RawBuilder<SqlBool> {
-  if (judgedBy === null) return sql<SqlBool>`true`
-  return sql<SqlBool>`l.candidate_id in (select judged.candidate_id from judged
-    where judged.campaign_id = ${campaignId} and judged.person_id = ${judgedBy})`
-}
+const isRevealed = (scope: CandidateScope) => isRevealedAt(scope, 'l.candidate_id')
 
 const isFiltered = ({
   columns,

@@ -1,4 +1,4 @@
-import { sql } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { listJudgedAmong } from '@/db/queries/grading'
 import { insertLeftOut } from '@/db/queries/left-out'
@@ -15,6 +15,9 @@ beforeEach(async () => {
   scenario = await makeScenario({ gradesWanted: 4, leastGrades: 3 })
 })
 afterEach(() => scenario.db.destroy())
+
+/** As migrations take it. */
+const bare = () => scenario.db as unknown as Kysely<unknown>
 
 const NOW = '2026-03-01T00:00:00.000Z'
 const rowsOf = async (table: string) => (await sql<object>`select * from ${sql.table(table)}`.execute(scenario.db)).rows
@@ -117,8 +120,8 @@ async function live(seed: number): Promise<void> {
 it.each([1, 2, 3])('is after any history as it would be made anew (seed %d)', async (seed) => {
   await live(seed)
   const kept = await listing()
-  await down(scenario.db)
-  await up(scenario.db)
+  await down(bare())
+  await up(bare())
   expect(await listing()).toEqual(kept)
 })
 
@@ -180,11 +183,11 @@ it.each([9, 10])('knows of each grader what their own judgement opens to them (s
 it('is made once by two migrations in a row, and taken back once', async () => {
   await live(7)
   const kept = await listing()
-  await up(scenario.db)
+  await up(bare())
   expect(await listing()).toEqual(kept)
-  await down(scenario.db)
-  await down(scenario.db)
-  await up(scenario.db)
+  await down(bare())
+  await down(bare())
+  await up(bare())
   expect(await listing()).toEqual(kept)
 })
 
