@@ -87,7 +87,7 @@ export const measuredOf = (state: DeskState): Measured => {
 }
 
 /** The desk as a kept measurement was made; what it does not speak of stays. */
-export function deskFrom(state: DeskState, kept: MeasurementShown, given: Given, opened: boolean): DeskState {
+export function deskFrom(state: DeskState, kept: MeasurementShown, given: Given): DeskState {
   const { fitted } = kept
   const common: DeskState = {
     ...state,
@@ -99,7 +99,7 @@ export function deskFrom(state: DeskState, kept: MeasurementShown, given: Given,
       lens: draftFrom('lens', kept.lens, given.lens),
       source: draftFrom('source', kept.source, given.source),
     },
-    opened: opened ? kept : null,
+    opened: null,
   }
   if (fitted.kind !== 'model') {
     const centre = fitted.kind === 'circle' && fitted.centreIsHeld ? 'held' : 'free'

@@ -52,10 +52,15 @@ export class DeskStore {
     if (before) this.set(before)
   }
 
-  /** A kept measurement: to look at, or to go on from. */
-  open(kept: MeasurementShown, toLookAt: boolean): void {
+  /** A kept measurement to look at; what lies on the desk stays under it. */
+  open(kept: MeasurementShown): void {
+    this.set({ mode: kept.kind === 'model' ? 'model' : 'arc', opened: kept })
+  }
+
+  /** The desk as that measurement was made, to go on from. */
+  goOnFrom(kept: MeasurementShown): void {
     this.begin()
-    this.set(deskFrom(this.state, kept, this.given, toLookAt))
+    this.set(deskFrom(this.state, kept, this.given))
   }
 
   close(): void {

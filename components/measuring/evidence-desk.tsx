@@ -94,7 +94,7 @@ export function useEvidenceDesk(
         measurements={measurements}
         shownIds={shownIds}
         onShow={(id) => setShownIds((now) => (now.includes(id) ? now.filter((one) => one !== id) : [...now, id]))}
-        onOpen={(kept) => desk.open(kept, true)}
+        onOpen={(kept) => desk.open(kept)}
         onWithdraw={measuring.withdraw}
       />
     ) : null,

@@ -71,7 +71,7 @@ export function KeptMeasurement({
         <p className="text-note text-mute">{cosmologyInWords(cosmology)}.</p>
       )}
       {mayMeasure ? (
-        <Button className="self-start pointer-coarse:min-h-11" onClick={() => desk.open(kept, false)}>
+        <Button className="self-start pointer-coarse:min-h-11" onClick={() => desk.goOnFrom(kept)}>
           Go on from here
         </Button>
       ) : null}

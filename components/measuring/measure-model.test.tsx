@@ -207,6 +207,12 @@ describe('a kept model', () => {
     press(1, 1)
     expect(cells().slice(1)).toEqual(['1.50″, 0.00″5.0+', '−0.90″, 0.00″−3.0− mirrored'])
     expect(screen.queryByRole('button', { name: /^Save/ })).toBeNull()
+    // Under it the own model lies as it was.
+    await userEvent.click(screen.getByText('Leave'))
+    await start()
+    expect(value('Axis ratio')).toBe('0.75')
+    await userEvent.click(screen.getByText('Leave'))
+    await userEvent.click(screen.getByText('Open'))
     await userEvent.click(screen.getByRole('button', { name: 'Go on from here' }))
     expect(value('Einstein radius, ″')).toBe('1.20')
     await userEvent.click(screen.getByText('Save'))
