@@ -1,11 +1,12 @@
 // Imaging, from bytes on disk to committed rows and stored stamps, beside the script an astronomer would write and beside two
 // floors: the same pictures through the encoder alone. All run in turn, so that a noisy minute hits them all.
 import { spawn } from 'node:child_process'
-import { mkdir, mkdtemp, readdir, readFile, rm, symlink } from 'node:fs/promises'
+import { mkdir, mkdtemp, readdir, rm, symlink } from 'node:fs/promises'
 import { availableParallelism, tmpdir } from 'node:os'
 import path from 'node:path'
 import sharp from 'sharp'
 import { workerCount } from '@/lib/work/stamps/image-pool'
+import { readStamp } from '@/lib/work/stamps/stamp-store'
 import { imageFolder, median, SAME_FOUR, verdict, writeCutouts, type Run } from './_imaging-run'
 import { floorOfOwnEncoder, floorOfSharp, type Picture } from './_encoder-floors'
 import { timeOfViews } from './_view-times'
@@ -21,7 +22,8 @@ async function decodeStamps(folder: string): Promise<Picture[]> {
   const names = (await readdir(folder, { recursive: true, withFileTypes: true })).filter((entry) => entry.isFile())
   const pictures: Picture[] = []
   for (const entry of names) {
-    const bytes = await readFile(path.join(entry.parentPath, entry.name))
+    const bytes = await readStamp(folder, entry.name)
+    if (bytes === null) throw new Error(`Stamp ${entry.name} is damaged`)
     const { channels: stored = 1 } = await sharp(bytes).metadata()
     const image = stored === 1 ? sharp(bytes).toColourspace('b-w') : sharp(bytes)
     const { data, info } = await image.raw().toBuffer({ resolveWithObject: true })
