@@ -36,6 +36,7 @@ export function DuplicateCase({
   const [left, setLeft] = useState<ReadonlySet<number>>(new Set())
   const keptOne = members[kept] ?? members[0]
   const same = members.filter(({ id }) => id !== keptOne.id && !left.has(id))
+  const leaving = keptOne.state === 'confirmed' ? [] : same.filter(({ state }) => state === 'confirmed')
   const choose = (id: number, chosen: boolean) => {
     const next = new Set(left)
     if (chosen) next.delete(id)
@@ -54,7 +55,7 @@ export function DuplicateCase({
           </p>
         ) : null}
       </header>
-      <fieldset>
+      <fieldset className="min-w-0">
         <legend className="sr-only">Which one is kept, and which are the same object?</legend>
         <ul className="flex gap-3 overflow-x-auto pb-2" tabIndex={0} aria-label="Candidates of the group">
           {members.map((member, place) => (
@@ -80,6 +81,13 @@ export function DuplicateCase({
               ? 'Choose which of the others are the same object.'
               : `${same.map(({ name }) => name).join(', ')} ${same.length === 1 ? 'is' : 'are'} set aside by a ruling that names ${keptOne.name}. Grades stay with the candidate they were given to, and it can be parted again.`}
           </p>
+          {leaving.length > 0 ? (
+            <p className="text-note">
+              <b className="font-semibold">Look at which one is kept:</b> {leaving.map(({ name }) => name).join(', ')}{' '}
+              {leaving.length === 1 ? 'is' : 'are'} confirmed and would leave the catalogue for {keptOne.name}, which is{' '}
+              {keptOne.state}.
+            </p>
+          ) : null}
           <ReasonForm
             label="Merge"
             action={mergeAction}

@@ -12,6 +12,7 @@ import { EmptyState, Notice } from '@/components/ui/notice'
 import type { DuplicatesPage } from '@/lib/work/matching/duplicates-page'
 import { DecidedList } from './decided-list'
 import { DuplicateCase } from './duplicate-case'
+import { likeliestKept } from './likeliest-kept'
 import { DUPLICATE_KEYS } from './duplicate-keys'
 import { useDuplicateKeys } from './use-duplicate-keys'
 
@@ -34,7 +35,8 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
   const { groups, total, radiusArcsec, due } = page
   const [keysOn, setKeysOn] = useKeySwitch(props.personId)
   const [at, setAt] = useState(0)
-  const [kept, setKept] = useState(0)
+  /** Place of the member that is kept; null: the one that most speaks for. */
+  const [kept, setKept] = useState<number | null>(null)
   const [said, setSaid] = useState<FormState>({})
   const mergeRef = useRef<HTMLTextAreaElement>(null)
   const differRef = useRef<HTMLTextAreaElement>(null)
@@ -43,7 +45,7 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
   const goTo = (next: number) => {
     if (next < 0 || next >= groups.length) return
     setAt(next)
-    setKept(0)
+    setKept(null)
   }
   /** What came of it is told above, since the group goes. */
   const telling =
@@ -52,7 +54,7 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
       const after = await action(before, form)
       if (after.done) {
         setSaid(after)
-        setKept(0)
+        setKept(null)
       }
       return after
     }
@@ -67,7 +69,11 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
       <header className="flex flex-wrap items-end justify-between gap-x-8 gap-y-3">
         <div className="flex max-w-2xl flex-col gap-1">
           <h1 className="text-title font-semibold">
-            {total > 0 ? `${counted(total, 'group')} that may be one object each` : 'No candidate is proposed twice'}
+            {total === 0
+              ? 'No candidate is proposed twice'
+              : total === 1
+                ? '1 group that may be one object'
+                : `${counted(total, 'group')}, each of which may be one object`}
           </h1>
           <p className="text-small text-mute">
             Candidates within {radiusArcsec}″ of each other by great-circle distance.
@@ -98,7 +104,7 @@ export function DuplicatesScreen(props: DuplicatesScreenProps) {
             slug={slug}
             group={group}
             radiusArcsec={radiusArcsec}
-            kept={kept}
+            kept={kept ?? likeliestKept(group)}
             onKeep={setKept}
             keys={keysOn}
             mergeAction={telling(props.mergeAction)}

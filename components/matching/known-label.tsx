@@ -15,7 +15,7 @@ export function KnownLabelMark({ labels }: { labels: readonly Told[] | undefined
   return (
     <span
       title={`Known as ${[nearest, ...more].map(inFull).join('; ')}`}
-      className="inline-flex max-w-48 items-center self-start gap-1 truncate rounded-full border border-edge/60 px-2 text-note text-mute"
+      className="inline-flex max-w-48 items-center gap-1 truncate rounded-full border border-edge/60 px-2 text-note text-mute"
     >
       <span className="truncate">known: {nearest.name}</span>
       {more.length > 0 ? <span className="figures">+{more.length}</span> : null}

@@ -52,7 +52,11 @@ export function MemberCard({
         </Link>
         <StatePill state={member.state} />
       </div>
-      <KnownLabelMark labels={member.known} />
+      {member.known.length > 0 ? (
+        <p>
+          <KnownLabelMark labels={member.known} />
+        </p>
+      ) : null}
       <p className="figures text-note text-mute">
         {formatRightAscension(member.raDeg)} {formatDeclination(member.decDeg)}
         <span className="block font-sans">

@@ -109,12 +109,15 @@ it('merges by keys what lies at one place across RA 0, shows both histories, and
   await vi.waitFor(
     async () => {
       await page.goto(`${server.url}${HOME}/duplicates`, { waitUntil: 'networkidle' })
-      expect(await page.locator('h1').textContent()).toBe('1 group that may be one object each')
+      expect(await page.locator('h1').textContent()).toBe('1 group that may be one object')
     },
     { timeout: 30_000, interval: 1000 },
   )
   await page.getByRole('heading', { name: '2 candidates within 0.50″' }).waitFor()
   await expectAccessible(page)
+  await page.setViewportSize({ width: 390, height: 844 })
+  expect(await widthOf(page), 'on a phone').toBe(390)
+  await page.setViewportSize({ width: 1440, height: 900 })
   await page.keyboard.press('2')
   await page.getByRole('button', { name: `Merge into ${names[1]}` }).waitFor()
   await page.keyboard.press('m')
