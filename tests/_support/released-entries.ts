@@ -2,9 +2,10 @@ import { sql, type Kysely } from 'kysely'
 import { requireRule } from '@/db/queries/campaigns'
 import { insertRun } from '@/db/queries/consensus'
 import type { DB } from '@/db/schema'
-import type { ReleaseAccess } from '@/db/schema/releases'
+import type { ReleaseAccess, ReleaseKind } from '@/db/schema/releases'
 import { toJson } from '@/db/schema/values'
 import { ruleOf } from '@/lib/work/campaigns/rule-in-force'
+import { hashSecret } from '@/lib/work/people/secrets'
 
 const NOW = '2026-02-03T04:05:06.000Z'
 
@@ -17,7 +18,18 @@ export async function addReleaseAt(
   campaign: { id: number; acronym: string },
   personId: number,
   places: readonly (readonly [raDeg: number, decDeg: number])[],
-  { number = 1, access = 'public' as Exclude<ReleaseAccess, 'link'>, title = 'Lenses of the north field' } = {},
+  {
+    number = 1,
+    access = 'public' as ReleaseAccess,
+    title = 'Lenses of the north field',
+    kind = 'release' as ReleaseKind,
+    correctsId = null as number | null,
+    statement = null as string | null,
+    /** Of a link. */
+    token = 'a secret',
+    /** SHA-256 of the one picture that each entry has. */
+    picture = null as string | null,
+  } = {},
 ): Promise<number> {
   const rule = await requireRule(db, campaign.id)
   const summary = { candidates: 0, grades: 0, cannotJudge: 0, graders: 0, open: 0, split: 0, confirmed: 0, setAside: 0 }
@@ -29,7 +41,7 @@ export async function addReleaseAt(
   const { id } = await db
     .insertInto('release')
     .values({
-      ...{ campaign_id: campaign.id, number, kind: 'release', corrects_id: null, statement: null, title },
+      ...{ campaign_id: campaign.id, number, kind, corrects_id: correctsId, statement, title },
       ...{ description: 'For tests.', authors: 'The Saltmarsh Collaboration', licence: 'CC-BY-4.0' },
       ...{ publisher: 'Saltmarsh Wide Survey', year: 2026, how_to_cite: 'Saltmarsh (2026).', software: 'Ringside' },
       ...{ campaign_name: 'North field', survey: 'Saltmarsh Wide Survey', acronym: campaign.acronym },
@@ -52,18 +64,21 @@ export async function addReleaseAt(
       db,
     )
     await sql`insert into release_entry (release_id, row_number, candidate_id, entry_key, designation, name, ra_deg, dec_deg, class,
-        mean, spread, votes_a, votes_b, votes_c, votes_n, cannot_judge, decided_by, reason, known_as, n_measured, stamps)
+        mean, spread, votes_a, votes_b, votes_c, votes_n, cannot_judge, decided_by, reason, known_as, n_measured, stamps, thumbnail)
       select ${id}, ${from + 1} + key, ${before + from + 1} + key, printf('SWS-%d', ${from + 1} + key),
         printf('SWS J%d', ${from + 1} + key), printf('R%d-%d', ${number}, ${from + 1} + key),
         json_extract(value, '$[0]'), json_extract(value, '$[1]'), substr('ABC', 1 + key % 3, 1), 3 - key % 3, 0, 4, 0, 0, 0, 0,
-        'verdict', 'Four of four graders are sure.', '[]', 0, '{}' from json_each(${part})`.execute(db)
+        'verdict', 'Four of four graders are sure.', '[]', 0, ${toJson(picture ? { colour: picture } : {})}, ${picture} from json_each(${part})`.execute(
+      db,
+    )
   }
   await db
     .insertInto('release_file')
     .values({ release_id: id, name: 'RELEASE.zip', media_type: 'application/zip', bytes: 0, sha256: '0'.repeat(64) })
     .execute()
-  if (access === 'public') {
-    const opened = { release_id: id, access, token_hash: null, changed_by: personId, changed_at: NOW }
+  if (access !== 'private') {
+    const tokenHash = access === 'link' ? hashSecret(token) : null
+    const opened = { release_id: id, access, token_hash: tokenHash, changed_by: personId, changed_at: NOW }
     await db.insertInto('release_access').values(opened).execute()
   }
   return id

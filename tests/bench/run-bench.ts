@@ -3,6 +3,7 @@
 import { availableParallelism, totalmem } from 'node:os'
 import { closeImagePool } from '@/lib/work/stamps/image-pool'
 import { benchCone } from './bench-cone'
+import { benchConeSearch } from './bench-cone-search'
 import { benchConsensus } from './bench-consensus'
 import { benchImaging } from './bench-imaging'
 import { benchImagingScale } from './bench-imaging-scale'
@@ -29,6 +30,7 @@ const BENCHES: Record<string, (size?: number) => Promise<string[]>> = {
   consensus: benchConsensus,
   'bench-page': benchPage,
   queue: benchQueue,
+  'cone-search': benchConeSearch,
   tables: benchTables,
 }
 
