@@ -31,7 +31,7 @@ export interface ListOrder {
 /** Whether the reader may see what was judged of the candidate `l`. */
 const isRevealed = (scope: CandidateScope) => isRevealedAt(scope, 'l.candidate_id')
 
-const isFiltered = ({
+export const isFiltered = ({
   columns,
   cone,
   stages,
@@ -106,17 +106,22 @@ export async function listSlice(
   const seen = column.told
     ? sql<SqlBool>`(${isRevealed(scope)} and ${column.told} and ${key} is not null)`
     : sql<SqlBool>`${key} is not null`
-  const sorted = await rows()
-    .where(seen)
-    .orderBy(isFiltered(filter) ? sql`+${key}` : key, direction)
-    .orderBy('l.candidate_id', direction)
-    .limit(limit)
-    .offset(offset)
-    .execute()
+  const countSeen = () => count(filtered(db, scope, table, filter).where(seen))
+  // A grader's own are few: where the page lies behind them they need not be sorted.
+  const known = column.told && offset > 0 ? await countSeen() : null
+  const sorted =
+    known !== null && offset >= known
+      ? []
+      : await rows()
+          .where(seen)
+          .orderBy(isFiltered(filter) ? sql`+${key}` : key, direction)
+          .orderBy('l.candidate_id', direction)
+          .limit(limit)
+          .offset(offset)
+          .execute()
   const ids = sorted.map(({ id }) => id)
   if (ids.length === limit) return ids
-  const before =
-    ids.length > 0 || offset === 0 ? offset + ids.length : await count(filtered(db, scope, table, filter).where(seen))
+  const before = ids.length > 0 || offset === 0 ? offset + ids.length : (known ?? (await countSeen()))
   const others = await rows()
     .where(sql<SqlBool>`not ${column.told ? sql`coalesce(${seen}, false)` : seen}`)
     .orderBy('l.candidate_id', direction)

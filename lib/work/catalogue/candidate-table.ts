@@ -78,7 +78,7 @@ export async function candidateTable(
   // What a filter leaves out is told as much as what it finds.
   if (scope.judgedBy !== null) await noteShown(db, permit, await listJudged(db, scope, filter))
   const all = await countListed(db, scope, 'candidates', {})
-  const { ids, count } = await tableSlice(db, scope, 'candidates', { ...asked, filter, radii })
+  const { ids, count } = await tableSlice(db, scope, 'candidates', { ...asked, filter, radii, all })
   const found = await readCandidateRows(db, ids)
   const listed = await asListed(db, permit, found)
   const open = listed.filter((row) => !row.withheld).map((row) => row.id)

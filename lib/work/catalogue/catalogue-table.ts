@@ -47,7 +47,7 @@ export async function catalogueTable(
   const radii = await radiiFor(db, permit, input)
   const filter = listFilter(input.filter, radii)
   const all = await countListed(db, scope, 'catalogue', {})
-  const { ids, count } = await tableSlice(db, scope, 'catalogue', { ...input, filter, radii })
+  const { ids, count } = await tableSlice(db, scope, 'catalogue', { ...input, filter, radii, all })
   const beside = await besideRows(db, permit, ids)
   const thumbnails = await thumbnailsOf(db, permit, ids)
   const entries = await catalogueEntriesAmong(db, permit, ids)

@@ -1,7 +1,14 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import type { CandidateScope } from '@/db/queries/catalogue'
-import { countListed, listMeasuredIds, listSlice, type ListedTable, type ListFilter } from '@/db/queries/listing'
+import {
+  countListed,
+  isFiltered,
+  listMeasuredIds,
+  listSlice,
+  type ListedTable,
+  type ListFilter,
+} from '@/db/queries/listing'
 import type { ColumnCondition } from '@/db/queries/list-conditions'
 import type { ListColumnName } from '@/db/queries/list-columns'
 import type { DB } from '@/db/schema'
@@ -52,16 +59,22 @@ export async function tableSlice(
   db: Kysely<DB>,
   scope: CandidateScope,
   table: ListedTable,
-  input: Pick<TableInput, 'order' | 'descending' | 'page' | 'pageSize'> & { filter: ListFilter; radii: Radii },
+  input: Pick<TableInput, 'order' | 'descending' | 'page' | 'pageSize'> & {
+    filter: ListFilter
+    radii: Radii
+    /** Rows without any filter. */
+    all: number
+  },
 ): Promise<TableSlice> {
-  const { filter, order, descending, page, pageSize, radii } = input
+  const { filter, order, descending, page, pageSize, radii, all } = input
   const offset = page * pageSize
   const column = order === 'id' || order === 'einstein' ? null : order
   const slice = { filter, order: { column, descending }, offset, limit: pageSize }
   const ids =
     order === 'einstein' ? await byRadius(db, scope, table, slice, radii) : await listSlice(db, scope, table, slice)
   const isWhole = ids.length < pageSize && (ids.length > 0 || offset === 0)
-  return { ids, count: isWhole ? offset + ids.length : await countListed(db, scope, table, filter) }
+  if (isWhole) return { ids, count: offset + ids.length }
+  return { ids, count: isFiltered(filter) ? await countListed(db, scope, table, filter) : all }
 }
 
 /** Measured ones first, by radius; the rest by arrival. */
