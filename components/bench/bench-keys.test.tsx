@@ -14,6 +14,11 @@ const press = (key: string, more: Partial<Parameters<typeof commandOf>[0]> = {})
 })
 
 describe('a key at the bench', () => {
+  it('means what the person made it, also where tags are open', () => {
+    expect(commandOf(press('f'), 'page', 'tags')).toEqual({ do: 'choose', index: 10 })
+    expect(commandOf(press('f'), 'page', 'tags', { A: 'F' })).toEqual({ do: 'grade', letter: 'A' })
+  })
+
   it.each(['A', 'B', 'C', 'N', 'U'])('%s grades, in either case', (letter) => {
     const grade = { do: 'grade', letter }
     expect(commandOf(press(letter.toLowerCase()), 'page', null)).toEqual(grade)

@@ -105,7 +105,9 @@ function translated(event: Pressed, choice: KeyChoice): Pressed | null {
   return { ...event, key, code: '', shiftKey: event.shiftKey && /^\p{L}$/u.test(event.key) }
 }
 
-function choiceOf(event: Pressed, focus: FocusKind): Command | null {
+function choiceOf(event: Pressed, focus: FocusKind, choice: KeyChoice): Command | null {
+  // A letter that the person has made the key of something else means that.
+  if (/^\p{L}$/u.test(event.key) && translateKey(choice, event.key) !== event.key) return null
   if (event.repeat || event.ctrlKey || event.altKey || event.metaKey || event.shiftKey || focus === 'text') return null
   const index = CHOICE_KEYS.indexOf((digitOf(event) ?? event.key.toUpperCase()) as (typeof CHOICE_KEYS)[number])
   return index >= 0 ? { do: 'choose', index } : null
@@ -119,7 +121,7 @@ export function commandOf(
 ): Command | null {
   if (focus === 'text' || pressed.isComposing) return null
   if (focus === 'slider' && SLIDER_KEYS.includes(pressed.key)) return null
-  const picked = chooser ? choiceOf(pressed, focus) : null
+  const picked = chooser ? choiceOf(pressed, focus, choice) : null
   if (picked) return picked
   const event = translated(pressed, choice)
   if (!event) return null

@@ -132,7 +132,9 @@ describe('a grade on its way', () => {
     expect(name()).toBe('SWS-2')
     expect(screen.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '1')
     await user.keyboard('z')
-    expect(screen.getByRole('button', { name: /^A: Sure/ })).toHaveAttribute('aria-pressed', 'true')
+    await waitFor(() =>
+      expect(screen.getByRole('button', { name: /^A: Sure/ })).toHaveAttribute('aria-pressed', 'true'),
+    )
   })
 
   it('says whose it is with everything it sends', async () => {

@@ -61,4 +61,14 @@ describe('a break', () => {
     await user.keyboard('e')
     expect(name()).toBe('Thank you for looking')
   })
+
+  it('is not offered again to somebody who took it, nor after a reload', async () => {
+    const user = await gradeForAnHour()
+    await user.keyboard('e')
+    await user.click(screen.getByRole('button', { name: /Go on grading/ }))
+    expect(screen.queryByText(OFFER)).not.toBeInTheDocument()
+    await user.keyboard('n')
+    await look()
+    expect(screen.queryByText(OFFER)).not.toBeInTheDocument()
+  })
 })

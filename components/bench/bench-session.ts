@@ -28,6 +28,18 @@ export interface Look {
   at: number
 }
 
+/** Which look it was: a candidate that came back turned is looked at twice. */
+export interface LookId {
+  candidateId: number
+  turned?: number
+}
+
+export const lookIdOf = ({ id, turned }: Pick<BenchCandidate, 'id' | 'turned'>): LookId =>
+  turned ? { candidateId: id, turned } : { candidateId: id }
+
+export const isLook = ({ candidate }: Pick<Look, 'candidate'>, { candidateId, turned }: LookId): boolean =>
+  candidate.id === candidateId && (candidate.turned ?? 0) === (turned ?? 0)
+
 /** 'dry': the server had fewer than asked for, although more is left: it lies on other people's benches. */
 export type Supply = 'ready' | 'asking' | 'dry' | 'failed'
 
@@ -46,7 +58,7 @@ export interface BenchSession {
   supply: Supply
   imaged: boolean
   /** What the person did last, for the line that confirms it. */
-  last: { what: 'given' | 'corrected' | 'kept'; candidateId: number } | null
+  last: ({ what: 'given' | 'corrected' | 'kept' } & LookId) | null
 }
 
 export interface Supplied {
@@ -76,12 +88,12 @@ export type BenchAction =
       /** After an absence what was on the bench may have gone to others; else it stays under the person's eyes. */
       resumed: boolean
     }
-  | { type: 'refused'; candidateId: number }
+  | ({ type: 'refused' } & LookId)
   /** The server keeps the answer that it had. */
-  | { type: 'correction refused'; candidateId: number; before: Answer }
+  | ({ type: 'correction refused'; before: Answer } & LookId)
   /** Grades of an earlier visit that are still on their way, found when the page opened. */
   | { type: 'found waiting'; candidateIds: number[]; firsts: number }
-  | { type: 'given elsewhere'; grades: { candidateId: number; answer: Answer; first: boolean }[] }
+  | { type: 'given elsewhere'; grades: (LookId & { answer: Answer; first: boolean })[] }
   /** From before a reload. */
   | { type: 'recalled'; looks: Look[]; drafts: Record<number, Draft> }
   /** The server has another answer than was remembered, or none. */
@@ -122,7 +134,8 @@ export function sameAnswer(a: Answer, b: Answer): boolean {
 /** The last look, when it was 'cannot judge' and may be explained. */
 export function explainable(session: BenchSession): Look | null {
   if (session.lookingBack !== null || session.last === null) return null
-  const look = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
+  const { last } = session
+  const look = session.given.find((one) => isLook(one, last))
   return look?.answer.grade === 'U' ? look : null
 }
 
@@ -156,11 +169,11 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
     case 'supplied':
       return refilled(session, action)
     case 'refused':
-      return refused(session, action.candidateId)
+      return refused(session, action)
     case 'correction refused':
       return {
-        ...corrected(session, action.candidateId, action.before),
-        last: session.last?.candidateId === action.candidateId ? null : session.last,
+        ...corrected(session, action, action.before),
+        last: isLast(session, action) ? null : session.last,
       }
     case 'found waiting':
       return foundWaiting(session, action.candidateIds, action.firsts)
@@ -169,11 +182,12 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
     case 'recalled':
       return recalled(session, action.looks, action.drafts)
     case 'stands':
-      return action.answer
-        ? corrected(session, action.candidateId, action.answer)
-        : refused(session, action.candidateId)
+      return action.answer ? corrected(session, action, action.answer) : refused(session, action)
   }
 }
+
+const isLast = ({ last }: BenchSession, { candidateId, turned }: LookId): boolean =>
+  last?.candidateId === candidateId && (last.turned ?? 0) === (turned ?? 0)
 
 function without(drafts: Record<number, Draft>, id: number): Record<number, Draft> {
   return Object.fromEntries(Object.entries(drafts).filter(([key]) => Number(key) !== id))
@@ -182,27 +196,25 @@ function without(drafts: Record<number, Draft>, id: number): Record<number, Draf
 function graded(session: BenchSession, { answer, view, seconds, at }: BenchAction & { type: 'graded' }): BenchSession {
   const look = currentLook(session)
   if (!look) return session
-  const candidateId = look.candidate.id
-  const drafts = without(session.drafts, candidateId)
+  const id = lookIdOf(look.candidate)
+  const drafts = without(session.drafts, id.candidateId)
   if (look.answer) {
     const same = sameAnswer(look.answer, answer)
-    const given = session.given.map((old) =>
-      old.candidate.id === candidateId ? { ...old, answer, view, seconds } : old,
-    )
-    const last = { what: same ? ('kept' as const) : ('corrected' as const), candidateId }
+    const given = session.given.map((old) => (isLook(old, id) ? { ...old, answer, view, seconds } : old))
+    const last = { what: same ? ('kept' as const) : ('corrected' as const), ...id }
     return { ...session, given, drafts, lookingBack: null, last, ...firstView(session.upcoming[0]) }
   }
   const upcoming = session.upcoming.slice(1)
   return {
     ...session,
     given: [
-      ...session.given.filter((old) => old.candidate.id !== candidateId),
+      ...session.given.filter((old) => !isLook(old, id)),
       { candidate: look.candidate, answer, view, seconds, at },
     ],
     upcoming,
     drafts,
     counts: { given: session.counts.given + 1, left: Math.max(0, session.counts.left - 1) },
-    last: { what: 'given', candidateId },
+    last: { what: 'given', ...id },
     ...firstView(upcoming[0]),
   }
 }
@@ -215,12 +227,12 @@ function wentBack(session: BenchSession): BenchSession {
 
 function kept(session: BenchSession): BenchSession {
   if (session.lookingBack === null) return session
-  const { id } = session.given[session.lookingBack].candidate
+  const id = lookIdOf(session.given[session.lookingBack].candidate)
   return {
     ...session,
     lookingBack: null,
-    drafts: without(session.drafts, id),
-    last: { what: 'kept', candidateId: id },
+    drafts: without(session.drafts, id.candidateId),
+    last: { what: 'kept', ...id },
     ...firstView(session.upcoming[0]),
   }
 }
@@ -242,12 +254,13 @@ function drafted(session: BenchSession, change: (draft: Draft) => Draft): BenchS
 function refilled(session: BenchSession, action: BenchAction & { type: 'supplied' }): BenchSession {
   const { supplied, waiting, resumed } = action
   const onTheirWay = new Set(waiting.candidateIds)
-  const handled = new Map(session.given.map(({ candidate }) => [candidate.id, candidate]))
   // A look that is asked for anew comes again, and a candidate that comes back turned, although graded in this sitting.
   const offered = supplied.candidates.filter(({ id, asked, turned }) => {
-    const before = handled.get(id)
     if (onTheirWay.has(id)) return false
-    return !before || (asked && asked.id !== before.asked?.id) || (turned !== undefined && turned !== before.turned)
+    const before = session.given.filter(({ candidate }) => candidate.id === id)
+    if (before.length === 0) return true
+    if (asked && before.every(({ candidate }) => candidate.asked?.id !== asked.id)) return true
+    return turned !== undefined && before.every(({ candidate }) => candidate.turned !== turned)
   })
   const stillOffered = new Set(offered.map(({ id }) => id))
   const kept = session.upcoming.filter(({ id }, index) => stillOffered.has(id) || (index === 0 && !resumed))
@@ -269,8 +282,8 @@ function refilled(session: BenchSession, action: BenchAction & { type: 'supplied
 }
 
 /** The server did not take the grade, so it does not count as given. */
-function refused(session: BenchSession, candidateId: number): BenchSession {
-  const index = session.given.findIndex(({ candidate }) => candidate.id === candidateId)
+function refused(session: BenchSession, id: LookId): BenchSession {
+  const index = session.given.findIndex((look) => isLook(look, id))
   if (index < 0) return session
   const given = session.given.filter((_, position) => position !== index)
   const { lookingBack } = session
@@ -281,7 +294,7 @@ function refused(session: BenchSession, candidateId: number): BenchSession {
     given,
     lookingBack: moved,
     counts: { ...session.counts, given: Math.max(0, session.counts.given - 1) },
-    last: session.last?.candidateId === candidateId ? null : session.last,
+    last: isLast(session, id) ? null : session.last,
     ...(lookingBack === index ? firstView(session.upcoming[0]) : {}),
   }
 }

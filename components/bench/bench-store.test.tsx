@@ -27,7 +27,7 @@ it('keeps grades and looks for the next page, and forgets what it is told to', a
   expect(await ids(next)).toEqual(['uid-1-A', 'uid-2-A'])
   expect((await next.looks()).map(({ candidate }) => candidate.id)).toEqual([1, 2])
   await next.forget('waiting', 'uid-1-A')
-  await next.forgetLook(1)
+  await next.forgetLook(look(1, 10))
   expect(await ids(next)).toEqual(['uid-2-A'])
   expect(await next.looks()).toHaveLength(1)
   await next.forgetLooks()

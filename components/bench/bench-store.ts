@@ -1,17 +1,25 @@
 /** The database of this browser in which the bench keeps what must survive a reload, told apart by campaign and person. */
 import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
-import type { Look } from './bench-session'
+import { lookIdOf, type Look } from './bench-session'
 import type { RefusedGrade, WaitingGrade } from './grade-outbox'
 
 interface Shape extends DBSchema {
   waiting: { key: [string, string]; value: Scoped<WaitingGrade> }
   refused: { key: [string, string]; value: Scoped<RefusedGrade> }
-  looks: { key: [string, number]; value: { scope: string; candidateId: number; look: Look } }
+  looks: { key: [string, string]; value: { scope: string; id: string; look: Look } }
+  /** Marks of the sheet on their way. */
+  marks: { key: [string, string]; value: { scope: string; id: string; candidate: number; mark: string; at: number } }
 }
 
 type Scoped<T> = T & { scope: string; id: string }
 
 const NAME = 'ringside-bench'
+
+/** A candidate that came back turned is another look. */
+export function lookKey({ candidate }: Pick<Look, 'candidate'>): string {
+  const { candidateId, turned } = lookIdOf(candidate)
+  return `${candidateId} ${turned ?? 0}`
+}
 
 /** Everything of one scope: its keys begin with it, and an array sorts after any number or string. */
 const allOf = (scope: string) => IDBKeyRange.bound([scope], [scope, []])
@@ -70,12 +78,12 @@ export class BenchStore {
 
   async keepLook(look: Look): Promise<void> {
     const db = await this.#open()
-    await db.put('looks', { scope: this.#scope, candidateId: look.candidate.id, look })
+    await db.put('looks', { scope: this.#scope, id: lookKey(look), look })
   }
 
-  async forgetLook(candidateId: number): Promise<void> {
+  async forgetLook(look: Look): Promise<void> {
     const db = await this.#open()
-    await db.delete('looks', [this.#scope, candidateId])
+    await db.delete('looks', [this.#scope, lookKey(look)])
   }
 
   async forgetLooks(): Promise<void> {
@@ -120,11 +128,17 @@ export async function scopesWaiting(): Promise<string[]> {
 }
 
 async function connect(onClosed: () => void): Promise<IDBPDatabase<Shape>> {
-  return openDB<Shape>(NAME, 1, {
-    upgrade(fresh) {
-      fresh.createObjectStore('waiting', { keyPath: ['scope', 'id'] })
-      fresh.createObjectStore('refused', { keyPath: ['scope', 'id'] })
-      fresh.createObjectStore('looks', { keyPath: ['scope', 'candidateId'] })
+  return openDB<Shape>(NAME, 2, {
+    upgrade(db, before) {
+      if (before < 1) {
+        db.createObjectStore('waiting', { keyPath: ['scope', 'id'] })
+        db.createObjectStore('refused', { keyPath: ['scope', 'id'] })
+      } else {
+        // How far undo reaches, told apart by the candidate alone.
+        db.deleteObjectStore('looks')
+      }
+      db.createObjectStore('looks', { keyPath: ['scope', 'id'] })
+      db.createObjectStore('marks', { keyPath: ['scope', 'id'] })
     },
     // A newer page wants to change the database.
     blocking(_now, _wanted, event) {

@@ -6,6 +6,7 @@ import { useLight } from '@/components/light/use-light'
 import { KeyNames } from '@/components/ui/key-names'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
 import { AskedLine } from './asked-line'
+import { isLook } from './bench-session'
 import { BenchHeader } from './bench-header'
 import { BenchRest } from './bench-rest'
 import { BenchSheets } from './bench-sheets'
@@ -47,7 +48,8 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
     onBlinkEnd: () => bench.setBlinking(false),
   })
   const keyName = useCallback((key: string) => (keys.on ? keyOf(keys.choice, key) : null), [keys])
-  const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
+  const { last: done } = session
+  const last = done ? session.given.find((one) => isLook(one, done)) : undefined
   const asked = look?.candidate.asked
   const moreAsked = session.upcoming.filter(({ id, asked }) => asked && id !== look?.candidate.id).length
   const spoken = [
@@ -94,7 +96,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 {asked ? <AskedLine asked={asked} more={moreAsked} /> : null}
                 <div className="flex min-h-0 flex-1 flex-col short:flex-row-reverse">
                   <Stage
-                    key={look.candidate.id}
+                    key={`${look.candidate.id} ${look.candidate.turned ?? 0}`}
                     candidate={look.candidate}
                     shown={bench.shownView}
                     light={light}

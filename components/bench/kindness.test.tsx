@@ -1,14 +1,26 @@
 import { describe, expect, it } from 'vitest'
 import type { GradeLetter } from '@/db/schema/grading'
 import { benchCandidate } from './_candidates'
-import { breakOffer, sittingSentence } from './kindness'
+import { breakOffer as offerAt, sittingSentence } from './kindness'
 
 const MINUTE_MS = 60_000
 /** One look each so many milliseconds, from the first minute on. */
 const looks = (number: number, everyMs: number, seconds: number) =>
   Array.from({ length: number }, (_, index) => ({ at: MINUTE_MS + index * everyMs, seconds }))
 
+/** A second after the newest look. */
+const breakOffer = (given: ReturnType<typeof looks>, declinedAt: number) =>
+  offerAt(given, declinedAt, (given.at(-1)?.at ?? 0) + 1000)
+
 describe('a break is offered', () => {
+  it('to nobody who comes back from one', () => {
+    const [long, quick] = [looks(101, 30_000, 20), looks(20, 2000, 1.4)]
+    for (const given of [long, quick]) {
+      expect(offerAt(given, 0, given.at(-1)!.at + 4.9 * MINUTE_MS)).not.toBeNull()
+      expect(offerAt(given, 0, given.at(-1)!.at + 5 * MINUTE_MS)).toBeNull()
+    }
+  })
+
   it('after fifty minutes without a pause, and not before', () => {
     expect(breakOffer(looks(101, 30_000, 20), 0)).toBe('long')
     expect(breakOffer(looks(100, 30_000, 20), 0)).toBeNull()

@@ -17,15 +17,18 @@ type Pace = Pick<Look, 'at' | 'seconds'>
 
 /**
  * @param looks of the sitting, in order.
- * @param declinedAt when the last offer was declined: only what came after it counts. 0: never.
+ * @param declinedAt when the last offer was declined or taken: only what came after it counts. 0: never.
+ * @param now milliseconds since 1970: who has been away for a while has had a pause.
  */
-export function breakOffer(looks: readonly Pace[], declinedAt: number): BreakOffer | null {
+export function breakOffer(looks: readonly Pace[], declinedAt: number, now: number): BreakOffer | null {
   const since = looks.filter(({ at }) => at > declinedAt)
+  const last = since.at(-1)
+  if (!last || now - last.at >= PAUSE_MS) return null
   const recent = since.slice(-QUICK_LOOKS).map(({ seconds }) => seconds)
   if (recent.length === QUICK_LOOKS && median(recent) < QUICK_SECONDS) return 'quick'
   let first = since.length - 1
   while (first > 0 && since[first].at - since[first - 1].at < PAUSE_MS) first--
-  return since.length > 0 && since[since.length - 1].at - since[first].at >= LONG_MS ? 'long' : null
+  return last.at - since[first].at >= LONG_MS ? 'long' : null
 }
 
 function median(values: readonly number[]): number {

@@ -1,7 +1,7 @@
 import { Fragment } from 'react'
 import { KeyCap } from '@/components/ui/key-cap'
 import { CANNOT_JUDGE_REASONS, type CannotJudgeReason } from '@/lib/work/grading/tags'
-import { currentLook, explainable, type BenchSession } from './bench-session'
+import { currentLook, explainable, isLook, type BenchSession } from './bench-session'
 import { ChoiceChips } from './choice-chips'
 import { gradeName } from './grade-words'
 import { OFFERS, type BreakOffer } from './kindness'
@@ -51,7 +51,8 @@ export function LastLine({
   onReason: (reason: CannotJudgeReason) => void
 }) {
   const look = currentLook(session)
-  const last = session.given.find(({ candidate }) => candidate.id === session.last?.candidateId)
+  const { last: done } = session
+  const last = done ? session.given.find((one) => isLook(one, done)) : undefined
   const unclear = explainable(session)
   // Each case has its own key, so that a button of one is not moved to where the next has its.
   return (

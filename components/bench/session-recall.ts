@@ -1,5 +1,5 @@
 /** What comes into a sitting from outside it: earlier visits, other tabs, and what the server says of an earlier answer. */
-import type { Answer, BenchSession, Draft, Look } from './bench-session'
+import { isLook, lookIdOf, type Answer, type BenchSession, type Draft, type Look, type LookId } from './bench-session'
 import { firstView } from './first-view'
 
 /** Grades of an earlier visit that are still on their way: the server does not count them yet. */
@@ -14,15 +14,15 @@ export function foundWaiting(session: BenchSession, candidateIds: readonly numbe
 /** Another tab of this person has graded: its candidates leave this one, and what it corrected is corrected here. */
 export function givenElsewhere(
   session: BenchSession,
-  grades: readonly { candidateId: number; answer: Answer; first: boolean }[],
+  grades: readonly (LookId & { answer: Answer; first: boolean })[],
 ): BenchSession {
-  const answers = new Map(grades.map(({ candidateId, answer }) => [candidateId, answer]))
   const firsts = grades.filter(({ first }) => first).length
   const given = session.given.map((look) => {
-    const answer = answers.get(look.candidate.id)
+    const answer = grades.findLast((grade) => isLook(look, grade))?.answer
     return answer ? { ...look, answer } : look
   })
-  return foundWaiting({ ...session, given }, [...answers.keys()], firsts)
+  const candidateIds = [...new Set(grades.map(({ candidateId }) => candidateId))]
+  return foundWaiting({ ...session, given }, candidateIds, firsts)
 }
 
 /**
@@ -30,9 +30,8 @@ export function givenElsewhere(
  * on the bench again, because the server has no grade of it, is not looked back at.
  */
 export function recalled(session: BenchSession, looks: readonly Look[], drafts: Record<number, Draft>): BenchSession {
-  const here = new Set([...session.given, ...session.upcoming.map((candidate) => ({ candidate }))].map(idOf))
-  // What came back turned is not looked back at after a reload: the first grade would be told beside it.
-  const earlier = looks.filter((look) => !here.has(idOf(look)) && !look.candidate.turned)
+  const here = [...session.given, ...session.upcoming.map((candidate) => ({ candidate }))]
+  const earlier = looks.filter((look) => !here.some((one) => isLook(one, lookIdOf(look.candidate))))
   return {
     ...session,
     given: [...earlier, ...session.given],
@@ -41,10 +40,8 @@ export function recalled(session: BenchSession, looks: readonly Look[], drafts: 
   }
 }
 
-const idOf = ({ candidate }: Pick<Look, 'candidate'>) => candidate.id
-
 /** What stands at the server is another answer than this browser remembers. */
-export function corrected(session: BenchSession, candidateId: number, answer: Answer): BenchSession {
-  const given = session.given.map((look) => (look.candidate.id === candidateId ? { ...look, answer } : look))
+export function corrected(session: BenchSession, id: LookId, answer: Answer): BenchSession {
+  const given = session.given.map((look) => (isLook(look, id) ? { ...look, answer } : look))
   return { ...session, given }
 }

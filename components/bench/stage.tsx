@@ -38,8 +38,8 @@ export function Stage({
   /** Ruler or circle, in use over the picture. */
   tool: Tool | null
   onLeaveTool: () => void
-  /** A picture of this candidate is in sight. */
-  onSeen: (candidateId: number) => void
+  /** The view that is shown has its picture. */
+  onSeen: () => void
   onBlink: (on: boolean) => void
   onSweep: (step: 1 | -1) => void
 }) {
@@ -81,7 +81,7 @@ export function Stage({
                 <img
                   key={`${key} ${attempt}`}
                   ref={(image) => {
-                    if (image?.complete && image.naturalWidth > 0) onSeen(candidate.id)
+                    if (key === view?.key && image?.complete && image.naturalWidth > 0) onSeen()
                   }}
                   src={url}
                   alt={key === view?.key ? `${candidate.name}, ${label}` : ''}
@@ -90,7 +90,7 @@ export function Stage({
                   height={height}
                   decoding="sync"
                   draggable={false}
-                  onLoad={() => onSeen(candidate.id)}
+                  onLoad={() => void (key === view?.key && onSeen())}
                   onError={() => setBroken((old) => [...old, url])}
                   className={`pixelated absolute inset-0 size-full object-contain ${key === view?.key && !missing ? '' : 'invisible'}`}
                 />

@@ -1,3 +1,4 @@
+import { fireEvent } from '@testing-library/react'
 import { describe, expect, it } from 'vitest'
 import { turnedStyle } from '@/components/light/turned'
 import { benchCandidate, supply } from './_candidates'
@@ -54,6 +55,70 @@ describe('a candidate that comes back', () => {
     session = supplied(graded(session), turnedQueue(3))
     expect(session.upcoming.map(({ id }) => id)).toEqual([2])
   })
+})
+
+describe('undo with a candidate that came back', () => {
+  it('reaches both looks, and what another tab or the server says of the second leaves the first alone', () => {
+    const answer = (grade: 'A' | 'B' | 'N') => ({ grade, tags: [], remark: '', reason: null })
+    const give = (session: ReturnType<typeof openSession>, grade: 'A' | 'B' | 'N') =>
+      reduceSession(session, { type: 'graded', answer: answer(grade), view: null, seconds: 1, at: 0 })
+    const twice = {
+      ...supply([1, 2]),
+      candidates: [benchCandidate(1), benchCandidate(2), { ...benchCandidate(1), turned: 5 }],
+    }
+    let session = give(give(give(openSession(twice), 'A'), 'B'), 'N')
+    const letters = () => session.given.map((look) => [look.candidate.id, look.candidate.turned, look.answer.grade])
+    expect(letters()).toEqual([
+      [1, undefined, 'A'],
+      [2, undefined, 'B'],
+      [1, 5, 'N'],
+    ])
+    session = reduceSession(session, {
+      type: 'given elsewhere',
+      grades: [{ candidateId: 1, turned: 5, answer: answer('B'), first: false }],
+    })
+    expect(letters()[0]).toEqual([1, undefined, 'A'])
+    expect(letters()[2]).toEqual([1, 5, 'B'])
+    session = reduceSession(session, { type: 'refused', candidateId: 1, turned: 5 })
+    expect(letters()).toEqual([
+      [1, undefined, 'A'],
+      [2, undefined, 'B'],
+    ])
+  })
+
+  it('reaches both after a reload too, and the sum of the sitting stays', async () => {
+    room.queue = { ...supply([1]), candidates: [benchCandidate(1), { ...benchCandidate(1), turned: 5 }] }
+    room.standing = { answer: { id: 'x', grade: 'A', tags: [], reason: null, remark: null }, open: true }
+    const first = await open()
+    await first.user.keyboard('a')
+    await look()
+    await first.user.keyboard('n')
+    await pause(50)
+    first.close()
+    room.queue = { ...supply([]), candidates: [], given: 1, left: 0 }
+    const again = await open()
+    await pause(60)
+    expect(document.body).toHaveTextContent('you graded 2 candidates: 1 sure, 1 not a lens')
+    await again.user.keyboard('z')
+    expect(document.querySelector<HTMLElement>('figure img')?.parentElement?.style.transform).toBe(
+      'rotate(-90deg) scaleX(-1)',
+    )
+    await again.user.keyboard('z')
+    expect(document.querySelector<HTMLElement>('figure img')?.parentElement?.style.transform).toBe('none')
+  })
+})
+
+it('a picture that is not the shown one opens no grade key', async () => {
+  const { user } = await open()
+  await user.keyboard('a')
+  const hidden = [...document.querySelectorAll('figure img')].find(
+    (image) => image.getAttribute('aria-hidden') === 'true',
+  )
+  fireEvent.load(hidden!)
+  await pause(140)
+  await user.keyboard('n')
+  expect(grades()).toHaveLength(1)
+  expect(name()).toBe('SWS-2')
 })
 
 it.each([

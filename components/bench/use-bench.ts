@@ -42,17 +42,19 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   const [resting, setResting] = useState(false)
   const [blinking, setBlinking] = useState(false)
   const [hint, setHint] = useState<string | null>(null)
-  const seen = useRef(new Set<number>())
+  /** The look whose picture has been in sight. */
+  const seen = useRef<string>(null)
   const broughtAt = useRef(0)
   const wroteAt = useRef(-Infinity)
 
   const look = resting ? null : currentLook(session)
   const candidateId = look?.candidate.id ?? null
+  const lookKey = look ? `${look.candidate.id} ${look.candidate.turned ?? 0}` : null
   const recall = useRef<() => Promise<void>>(null)
   const { outbox, snapshot, latest, add } = useOutbox(slug, personId, {
-    refused: ({ first: wasFirst, before, candidateId: id }) => {
-      if (wasFirst) dispatch({ type: 'refused', candidateId: id })
-      else if (before) dispatch({ type: 'correction refused', candidateId: id, before })
+    refused: ({ first: wasFirst, before, candidateId: id, body: { turned } }) => {
+      if (wasFirst) dispatch({ type: 'refused', candidateId: id, turned })
+      else if (before) dispatch({ type: 'correction refused', candidateId: id, turned, before })
     },
     found: (grades, where) => {
       const candidateIds = grades.map((grade) => grade.candidateId)
@@ -61,10 +63,11 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
       if (shown) setHint(`You gave ${shown.name} its ${shown.body.grade} in another tab.`)
       dispatch({
         type: 'given elsewhere',
-        grades: grades.map(({ candidateId: id, first: isFirst, body: { grade: letter, tags, remark, reason } }) => ({
+        grades: grades.map(({ candidateId: id, first: isFirst, body }) => ({
           candidateId: id,
+          turned: body.turned,
           first: isFirst,
-          answer: { grade: letter, tags, remark: remark ?? '', reason } as Answer,
+          answer: { grade: body.grade, tags: body.tags, remark: body.remark ?? '', reason: body.reason } as Answer,
         })),
       })
     },
@@ -89,7 +92,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   useEffect(() => {
     broughtAt.current = performance.now()
-  }, [candidateId])
+  }, [lookKey])
   useEffect(() => {
     if (!hint) return
     const timer = setTimeout(() => setHint(null), HINT_MS)
@@ -129,7 +132,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     }
     const { candidate, answer: before } = look
     const hasPicture = candidate.views.some(({ url }) => url !== null)
-    if (letter !== 'U' && !(hasPicture && seen.current.has(candidate.id))) {
+    if (letter !== 'U' && !(hasPicture && seen.current === lookKey)) {
       setHint(
         hasPicture ? 'The picture is still on its way. Grade it when you see it.' : 'Without a picture only U fits.',
       )
@@ -155,6 +158,8 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   function rest(): void {
     settle()
+    // Taking a break is an answer to its offer.
+    if (!resting) decline()
     setResting(!resting)
   }
 
@@ -238,7 +243,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
     sheet,
     tool,
     resting,
-    offer: resting ? null : offer,
+    offer: look ? offer : null,
     declineBreak: decline,
     hint,
     snapshot,
@@ -251,7 +256,9 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
       wroteAt.current = performance.now()
       setRemarkOpen(false)
     },
-    markSeen: (id: number) => seen.current.add(id),
+    markSeen: () => {
+      seen.current = lookKey
+    },
     toggleTag: (tag: (typeof TAGS)[number]) => dispatch({ type: 'tag toggled', tag }),
     writeRemark: (remark: string) => dispatch({ type: 'remark written', remark }),
     chooseView: (key: string) => dispatch({ type: 'view chosen', key }),

@@ -3,7 +3,7 @@
 import { useCallback, useEffect, useEffectEvent, useRef, type Dispatch } from 'react'
 import { askOwnAnswer } from './bench-api'
 import { currentLook, sameAnswer, type BenchAction, type BenchSession, type Look } from './bench-session'
-import { BenchStore } from './bench-store'
+import { BenchStore, lookKey } from './bench-store'
 import type { OutboxSnapshot } from './grade-outbox'
 import { keepDrafts, keptDrafts } from './kept-drafts'
 
@@ -56,7 +56,8 @@ export function useSitting({
     const fresh = now - (found.at(-1)?.at ?? now) <= SITTING_MS
     if (!fresh) await store.current?.forgetLooks().catch(() => {})
     const looks = fresh ? found : []
-    for (const look of looks) unchecked.current.add(look.candidate.id)
+    // The server tells the first answer only, not that to a candidate that came back turned.
+    for (const { candidate } of looks) if (!candidate.turned) unchecked.current.add(candidate.id)
     kept.current = [...looks, ...kept.current]
     drafts.current = { ...written, ...drafts.current }
     if (looks.length > 0 || Object.keys(written).length > 0) dispatch({ type: 'recalled', looks, drafts: written })
@@ -64,14 +65,14 @@ export function useSitting({
 
   const { given } = session
   useEffect(() => {
-    const before = new Map(kept.current.map((look) => [look.candidate.id, look]))
+    const before = new Map(kept.current.map((look) => [lookKey(look), look]))
     kept.current = given
     for (const look of given) {
-      const { id } = look.candidate
-      if (before.get(id) !== look) void store.current?.keepLook(look).catch(() => {})
-      before.delete(id)
+      const key = lookKey(look)
+      if (before.get(key) !== look) void store.current?.keepLook(look).catch(() => {})
+      before.delete(key)
     }
-    for (const id of before.keys()) void store.current?.forgetLook(id).catch(() => {})
+    for (const look of before.values()) void store.current?.forgetLook(look).catch(() => {})
   }, [given])
 
   useEffect(() => {
@@ -79,9 +80,10 @@ export function useSitting({
     drafts.current = session.drafts
   }, [scope, session.drafts])
 
-  const lookedAt = session.lookingBack === null ? null : (currentLook(session)?.candidate.id ?? null)
+  const back = session.lookingBack === null ? null : currentLook(session)?.candidate
+  const lookedAt = back && !back.turned ? back.id : null
   const check = useEffectEvent(async (candidateId: number) => {
-    const remembered = given.find(({ candidate }) => candidate.id === candidateId)?.answer
+    const remembered = given.find(({ candidate }) => candidate.id === candidateId && !candidate.turned)?.answer
     if (!remembered || outbox().waiting.some((waiting) => waiting.candidateId === candidateId)) return
     const told = await askOwnAnswer({ slug, personId }, candidateId).catch(() => null)
     if (!told) return

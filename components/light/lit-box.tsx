@@ -93,7 +93,7 @@ export function LitBox({
         />
       ) : null}
       {close && size ? (
-        <p className="figures pointer-events-none absolute left-2 top-1.5 text-note text-white [text-shadow:0_0_2px_#000]">
+        <p className="figures pointer-events-none absolute left-2 top-1.5 text-note text-white [text-shadow:0_0_2px_black]">
           {closer > 1 ? `${closeFieldArcsec}″ field` : wholeBecause(size, scale, closeFieldArcsec)}
         </p>
       ) : null}
@@ -126,7 +126,7 @@ function ZoomedOverlay({
     <>
       <StampOverlay width={size.width / scale} height={size.height / scale} geometry={geometry} />
       {scale > 1 ? (
-        <p className="figures pointer-events-none absolute right-2 top-1.5 text-note text-white [text-shadow:0_0_2px_#000]">
+        <p className="figures pointer-events-none absolute right-2 top-1.5 text-note text-white [text-shadow:0_0_2px_black]">
           {Number(scale.toFixed(1))}×
         </p>
       ) : null}

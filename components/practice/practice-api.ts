@@ -23,7 +23,9 @@ async function ask<T>(address: string, init?: RequestInit): Promise<T> {
   return read<T>(response)
 }
 
-export const fetchPractice = (slug: string): Promise<PracticeState> => ask(root(slug))
+/** Somebody else who has signed in beside it is told nothing here. */
+export const fetchPractice = ({ slug, personId }: { slug: string; personId: number }): Promise<PracticeState> =>
+  ask(root(slug), { cache: 'no-store', headers: { [HEADER]: String(personId) } })
 
 export const sendAnswer = (
   { slug, personId }: { slug: string; personId: number },

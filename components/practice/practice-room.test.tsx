@@ -54,15 +54,32 @@ afterEach(() => {
   vi.unstubAllGlobals()
 })
 
-const open = (first = state(), lead = false) => {
+/** Pictures arrive, and longer passes than a key takes to bounce. */
+async function look(): Promise<void> {
+  for (const image of document.querySelectorAll('figure img')) fireEvent.load(image)
+  await act(() => new Promise((resolve) => setTimeout(resolve, 140)))
+}
+
+const open = async (first = state(), lead = false, seen = true) => {
   render(<PracticeRoom slug="north" campaignName="North field" personId={7} lead={lead} first={first} />)
+  if (seen) await look()
   return userEvent.setup()
 }
 const marks = () => screen.queryByRole('img', { name: 'Marks round the painted light' })
 
 describe('practice', () => {
+  it('takes no answer before the picture is there, nor from a key that bounces', async () => {
+    const user = await open(state(), false, false)
+    await user.keyboard('n')
+    expect(sent).toEqual([])
+    for (const image of document.querySelectorAll('figure img')) fireEvent.load(image)
+    await look()
+    await user.keyboard('n')
+    await waitFor(() => expect(sent).toHaveLength(1))
+  })
+
   it('takes an answer by the keys of the bench, tells the truth with the light marked, and goes on by Enter', async () => {
-    const user = open()
+    const user = await open()
     expect(screen.queryByText(/painted over/)).toBeNull()
     await user.keyboard('n')
     expect(await screen.findByRole('heading', { name: 'A lens' })).toBeInTheDocument()
@@ -77,7 +94,7 @@ describe('practice', () => {
   })
 
   it('takes the marks off while the blink key or the picture is held', async () => {
-    const user = open()
+    const user = await open()
     await user.keyboard('n')
     await screen.findByRole('heading', { name: 'A lens' })
     act(() => (document.activeElement as HTMLElement).blur())
@@ -93,7 +110,7 @@ describe('practice', () => {
   })
 
   it('marks north-east light up and to the left, where east is left', async () => {
-    const user = open()
+    const user = await open()
     await user.keyboard('n')
     await screen.findByRole('heading', { name: 'A lens' })
     const [x, y] = marks()!.querySelector('path')!.getAttribute('d')!.slice(1).split('L')[2].split(' ').map(Number)
@@ -103,7 +120,7 @@ describe('practice', () => {
   })
 
   it('hears no second answer to the same stamp', async () => {
-    const user = open()
+    const user = await open()
     await user.keyboard('nab')
     await screen.findByRole('heading', { name: 'A lens' })
     await user.keyboard('c')
@@ -112,7 +129,7 @@ describe('practice', () => {
 
   it('says why an answer was not taken, and takes it again', async () => {
     answer = () => Response.json({ detail: 'This stamp is not the one that practice shows you now.' }, { status: 409 })
-    const user = open()
+    const user = await open()
     await user.keyboard('a')
     expect(await screen.findByRole('alert')).toHaveTextContent('not the one that practice shows')
     answer = () => Response.json({ ...TRUTH, grade: 'A' })
@@ -121,22 +138,22 @@ describe('practice', () => {
     await waitFor(() => expect(screen.queryByRole('alert')).toBeNull())
   })
 
-  it('says honestly that there is nothing to practise on, and sends a lead to make some', () => {
+  it('says honestly that there is nothing to practise on, and sends a lead to make some', async () => {
     const nothing = state({ stamps: 0, wanted: 0, next: null })
-    open(nothing)
+    await open(nothing)
     expect(screen.getByRole('heading', { name: 'Nothing to practise on yet' })).toBeInTheDocument()
     expect(screen.getByRole('link', { name: 'To the bench' })).toHaveAttribute('href', '/campaigns/north/bench')
     cleanup()
-    open(nothing, true)
+    await open(nothing, true)
     expect(screen.getByRole('link', { name: 'Make calibration stamps' })).toBeInTheDocument()
   })
 
-  it('ends with the person’s own matrix and its intervals', () => {
+  it('ends with the person’s own matrix and its intervals', async () => {
     const own = confusionOf([
       { truth: 'lens', grade: 'A', n: 8 },
       { truth: 'lens', grade: 'N', n: 2 },
     ])
-    open(state({ next: null, answered: 10, own }))
+    await open(state({ next: null, answered: 10, own }))
     expect(screen.getByText('8 of 10, 80 % (49 % to 94 %)')).toBeInTheDocument()
     expect(screen.getByText('Your answers in practice. Only you see them.')).toBeInTheDocument()
   })

@@ -112,7 +112,7 @@ export function PracticeRoom({ slug, campaignName, personId, lead, first }: Prac
                     light={light}
                     tool={null}
                     onLeaveTool={nothing}
-                    onSeen={nothing}
+                    onSeen={practice.markSeen}
                     onBlink={setBare}
                     onSweep={step}
                   />

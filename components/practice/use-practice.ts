@@ -17,7 +17,12 @@ export interface Practice {
   chooseView: (key: string) => void
   answer: (letter: GradeLetter) => void
   goOn: () => void
+  /** The view that is shown has its picture. */
+  markSeen: () => void
 }
+
+/** A key that bounces comes faster than anybody can look. */
+const LEAST_LOOK_MS = 120
 
 /** One stamp, its answer, its truth, the next. Everything stays as it is while the server cannot be reached. */
 export function usePractice(slug: string, personId: number, first: PracticeState): Practice {
@@ -27,6 +32,7 @@ export function usePractice(slug: string, personId: number, first: PracticeState
   const [busy, setBusy] = useState(false)
   const [view, setView] = useState<string | null>(null)
   const since = useRef(0)
+  const seen = useRef<number>(null)
   const stamp = state.next
   const stampId = stamp?.id ?? null
   useEffect(() => {
@@ -53,16 +59,21 @@ export function usePractice(slug: string, personId: number, first: PracticeState
     shownView: view ?? firstView(stamp ?? undefined).view,
     chooseView: setView,
     answer: (grade) => {
-      if (stampId === null || truth || busy) return
+      if (stamp === null || truth || busy || performance.now() - since.current < LEAST_LOOK_MS) return
+      // As at the bench: nobody judges what is still on its way.
+      if (grade !== 'U' && seen.current !== stamp.id && stamp.views.some(({ url }) => url !== null)) return
       const seconds = Math.min(86_400, Math.round((performance.now() - since.current) / 100) / 10)
       void during(async () =>
-        setTruth(await sendAnswer({ slug, personId }, stampId, { id: makeUid(), grade, seconds })),
+        setTruth(await sendAnswer({ slug, personId }, stamp.id, { id: makeUid(), grade, seconds })),
       )
+    },
+    markSeen: () => {
+      seen.current = stampId
     },
     goOn: () => {
       if (busy) return
       void during(async () => {
-        const next = await fetchPractice(slug)
+        const next = await fetchPractice({ slug, personId })
         setState(next)
         setTruth(null)
         setView(null)

@@ -157,7 +157,9 @@ export async function benchPage(held = HELD): Promise<string[]> {
       await gradeNext(page)
       if (given === timed) {
         const seen = await shownIn(page)
-        sorted = seen.paintedMs.filter((ms) => !Number.isNaN(ms)).sort((a, b) => a - b)
+        // A stamp that was never painted took longer than any other.
+        const painted = Array.from({ length: timed }, (_, n) => seen.paintedMs[n] ?? Number.NaN)
+        sorted = painted.map((ms) => (Number.isNaN(ms) ? Infinity : ms)).sort((a, b) => a - b)
       }
       if (given % HEAP_EVERY === 0) heaps.push(await heapBytes(session))
     }
@@ -166,7 +168,7 @@ export async function benchPage(held = HELD): Promise<string[]> {
     const perCandidate = heaps.length > 1 ? (heaps[heaps.length - 1] - heaps[0]) / (HEAP_EVERY * (heaps.length - 1)) : 0
     return [
       `The bench in Chromium, ${held} candidates graded by key`,
-      `  key press to next stamp painted, ${sorted.length} of ${timed}: median ${at(0.5).toFixed(0)} ms, p95 ${at(0.95).toFixed(0)} ms, most ${at(1).toFixed(0)} ms (${againstAim(at(0.95), 50, 'ms')})`,
+      `  key press to next stamp painted, ${sorted.filter(Number.isFinite).length} of ${timed} painted: median ${at(0.5).toFixed(0)} ms, p95 ${at(0.95).toFixed(0)} ms, most ${at(1).toFixed(0)} ms (${againstAim(at(0.95), 50, 'ms')})`,
       `  layout shift in all, those after a key too: ${shift.toFixed(6)} (aim 0: ${shift === 0 ? 'met' : 'NOT MET'})`,
       ...moved.slice(0, 5).map((what) => `    moved at ${what}`),
       `  heap after garbage collection, each ${HEAP_EVERY}: ${heaps.map((bytes) => (bytes / 1e6).toFixed(1)).join(' ')} MB; ${perCandidate.toFixed(0)} bytes a candidate, which is its place in undo`,
