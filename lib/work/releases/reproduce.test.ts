@@ -114,8 +114,20 @@ it('finds a state that no verdict or ruling gives', async () => {
   const copy = await tampered(await publish(MEAN), 'candidates.csv', (text) =>
     text.replace(',set aside,set aside,', ',confirmed,set aside,'),
   )
-  expect((await reproduce(copy)).differences).toEqual([
+  expect((await reproduce(copy)).differences).toContainEqual(
     expect.objectContaining({ what: 'state', released: 'confirmed', recomputed: 'set aside' }),
+  )
+})
+
+it('finds an entry that was taken out of the catalogue', async () => {
+  const copy = await tampered(await publish(MEAN), 'catalogue.csv', (text) =>
+    text
+      .split('\r\n')
+      .filter((line) => !line.includes('"SWS 4,'))
+      .join('\r\n'),
+  )
+  expect((await reproduce(copy)).differences).toEqual([
+    expect.objectContaining({ candidate: 'SWS 4, "é"', what: 'catalogue', released: 'no entry' }),
   ])
 })
 

@@ -9,7 +9,7 @@ import { RuleFile } from './rule-file'
 /** One thing that the release says otherwise than its grades. */
 export interface Difference {
   candidate: string
-  what: 'verdict' | 'state' | 'grades' | 'cannot judge' | 'mean' | 'spread' | 'probability'
+  what: 'verdict' | 'state' | 'grades' | 'cannot judge' | 'mean' | 'spread' | 'probability' | 'catalogue'
   released: string
   recomputed: string
 }
@@ -64,7 +64,18 @@ async function recompute(zip: ReleaseZip): Promise<Reproduction> {
   const judged = await judgeReleased(ruleInForce, released)
   const differences: Difference[] = []
   let verdicts = 0
-  for await (const row of rows(zip, 'candidates.csv')) differences.push(...compare(row, judged, verdicts++))
+  const entries = rows(zip, 'catalogue.csv')
+  let entry = await entries.next()
+  for await (const row of rows(zip, 'candidates.csv')) {
+    differences.push(...compare(row, judged, verdicts++))
+    const isEntry = !entry.done && entry.value.name === row.name
+    if (isEntry !== (row.state === 'confirmed')) {
+      const [released, recomputed] = isEntry ? ['an entry', 'none'] : ['no entry', 'one']
+      differences.push({ candidate: row.name, what: 'catalogue', released, recomputed })
+    }
+    if (isEntry) entry = await entries.next()
+  }
+  if (!entry.done) throw new NotARelease(`catalogue.csv has '${entry.value.name}' out of the order of candidates.csv.`)
   return { release, campaign, kind, verdicts, grades, differences }
 }
 
