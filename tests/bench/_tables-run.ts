@@ -44,7 +44,7 @@ export interface TablesRun {
   fillSeconds: number
   tables: TimedTable[]
   slowest: { what: string; plans: string[] }
-  /** Recording what moves a row, with the listing and without, microseconds each. */
+  /** Leaving out a grader, which counts their entries anew. */
   leaveOutMs: number
 }
 
