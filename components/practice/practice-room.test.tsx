@@ -85,7 +85,7 @@ describe('practice', () => {
     expect(await screen.findByRole('heading', { name: 'A lens' })).toBeInTheDocument()
     expect(sent[0]).toMatchObject({ url: '/api/campaigns/north/practice/1', body: { grade: 'N' } })
     expect(screen.getAllByText(/A blue arc 1.4 arcsec to the north-east/).length).toBeGreaterThan(0)
-    expect(screen.getByText(/You said N, not a lens. Your answer goes against it./)).toBeInTheDocument()
+    expect(screen.getByText(/You said N, not a lens. It is a lens, against your answer./)).toBeInTheDocument()
     expect(marks()).toBeInTheDocument()
     expect(screen.getByRole('button', { name: 'Next stamp' })).toHaveFocus()
     await user.keyboard('{Enter}')
@@ -134,7 +134,7 @@ describe('practice', () => {
     expect(await screen.findByRole('alert')).toHaveTextContent('not the one that practice shows')
     answer = () => Response.json({ ...TRUTH, grade: 'A' })
     await user.keyboard('a')
-    expect(await screen.findByText(/Your answer goes with it./)).toBeInTheDocument()
+    expect(await screen.findByText(/as you said./)).toBeInTheDocument()
     await waitFor(() => expect(screen.queryByRole('alert')).toBeNull())
   })
 

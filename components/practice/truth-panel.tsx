@@ -56,7 +56,8 @@ export function TruthStage({
 /** Whether the answer and the truth go together; 'cannot judge' is neither right nor wrong. */
 function verdictOf({ truth, grade }: PracticeTruth): string {
   if (grade === 'U') return 'You could not judge it.'
-  return (grade === 'N') === (truth === 'not a lens') ? 'Your answer goes with it.' : 'Your answer goes against it.'
+  const is = truth === 'lens' ? 'It is a lens' : 'It is not a lens'
+  return (grade === 'N') === (truth === 'not a lens') ? `${is}, as you said.` : `${is}, against your answer.`
 }
 
 export function TruthPanel({

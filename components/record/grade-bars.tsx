@@ -21,7 +21,7 @@ export function GradeBars({ grades }: { grades: GraderRecord['grades'] }) {
                 className={`block h-2 ${rung?.bar ?? 'bg-line'}`}
                 style={{ width: `${(70 * n) / most}%` }}
               />
-              <span className="figures text-note text-mute">{percent(n, all)}</span>
+              <span className="figures whitespace-nowrap text-note text-mute">{percent(n, all)}</span>
             </span>
           </li>
         )

@@ -67,7 +67,10 @@ export function SheetGrid({
                   Sent on
                 </span>
               ) : (
-                <span className="figures truncate text-[0.6875rem] text-tray-text">{stamp.name}</span>
+                // Where it is cut off, the end of a name tells it from the next.
+                <span className="figures truncate text-left text-[0.6875rem] text-tray-text [direction:rtl]">
+                  <bdi>{stamp.name}</bdi>
+                </span>
               )}
               <button
                 type="button"

@@ -4,6 +4,7 @@ import { ArrowLeft } from 'lucide-react'
 import Link from 'next/link'
 import { useCallback, useEffect, useEffectEvent, useRef, useState } from 'react'
 import { useKeySwitch } from '@/components/bench/use-key-switch'
+import { counted } from '@/components/campaigns/in-words'
 import { ButtonLink } from '@/components/ui/button'
 import { KeyNames } from '@/components/ui/key-names'
 import { Notice } from '@/components/ui/notice'
@@ -111,14 +112,17 @@ export function Sheet({
             <span className="figures">{many(sittingDropped)}</span> dropped in this sitting
           </p>
           <p role="status" className="text-note text-mute">
-            {outbox.waiting > 0 ? `${outbox.waiting} marks on their way` : ''}
+            {outbox.waiting > 0 ? `${counted(outbox.waiting, 'mark')} on the way` : ''}
           </p>
         </header>
         <main className="min-h-0 flex-1 overflow-y-auto px-3 py-3 md:px-6">
           {outbox.trouble ? (
             <div className="mb-3">
               <Notice tone="alarm">
-                {outbox.trouble} {outbox.waiting > 0 ? `${outbox.waiting} marks are kept here and sent again.` : ''}
+                {outbox.trouble}{' '}
+                {outbox.waiting > 0
+                  ? `${counted(outbox.waiting, 'mark')} ${outbox.waiting === 1 ? 'is' : 'are'} kept here and sent again.`
+                  : ''}
               </Notice>
             </div>
           ) : null}

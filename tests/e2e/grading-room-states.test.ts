@@ -89,7 +89,7 @@ it('the sheet: a page, marks, a stamp large, the question, what waits without a 
     .first()
     .waitFor()
   await page.getByRole('button', { name: /^Next page/ }).click()
-  await page.getByText('marks on their way').waitFor({ state: 'detached' })
+  await page.getByText(/marks? on the way/).waitFor({ state: 'detached' })
 
   const grader = await room.enter(browser, 'dunlin')
   await open(grader.page, `${HOME}/sheet`)
