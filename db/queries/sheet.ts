@@ -171,18 +171,44 @@ export async function renewSheet(db: Kysely<DB>, { campaignId, personId }: Passe
     .execute()
 }
 
-export async function clearSheet(db: Kysely<DB>, campaignId: number, personId: number): Promise<void> {
-  await db.deleteFrom('sheet_lease').where('campaign_id', '=', campaignId).where('person_id', '=', personId).execute()
+/** Takes these from the person's sheet, or all that lies there. */
+export async function clearSheet(
+  db: Kysely<DB>,
+  campaignId: number,
+  personId: number,
+  ids: readonly number[] | null,
+): Promise<void> {
+  await db
+    .deleteFrom('sheet_lease')
+    .where('campaign_id', '=', campaignId)
+    .where('person_id', '=', personId)
+    .$if(ids !== null, (query) => query.where(sql<SqlBool>`+candidate_id in ${among(ids!)}`))
+    .execute()
+}
+
+/** Back on the person's sheet, but for what lies on another's by now. */
+export async function layBackOnSheet(
+  db: Kysely<DB>,
+  { campaignId, personId }: Omit<Passer, 'now'>,
+  ids: readonly number[],
+  until: IsoTime,
+): Promise<void> {
+  if (ids.length === 0) return
+  await sql`insert into sheet_lease (campaign_id, candidate_id, person_id, until)
+    select ${campaignId}, candidate.id, ${personId}, ${until} from candidate
+    where candidate.id in ${among(ids)} and (candidate.truth is not null or not exists (
+      select 1 from sheet_lease held where held.candidate_id = candidate.id))
+    on conflict do nothing`.execute(db)
 }
 
 /** Those of the ids that are known marks, each with whose. */
 export async function listMarksByUid(
   db: Kysely<DB>,
   uids: readonly string[],
-): Promise<{ uid: string; candidateId: number; personId: number }[]> {
+): Promise<(Pick<SheetMarkTable, 'uid' | 'mark'> & { candidateId: number; personId: number })[]> {
   return db
     .selectFrom('sheet_mark')
-    .select(['uid', 'candidate_id as candidateId', 'person_id as personId'])
+    .select(['uid', 'candidate_id as candidateId', 'person_id as personId', 'mark'])
     .where(sql<SqlBool>`uid in (select value from json_each(${JSON.stringify(uids)}))`)
     .execute()
 }

@@ -108,7 +108,11 @@ async function drawWaiting(transaction: Kysely<DB>, campaign: Campaign, passer: 
   return [...ahead, ...round.filter(({ id }) => !known.has(id))].slice(0, limit)
 }
 
-/** Gives the person's sheet back, so that others get it at once. */
-export async function giveSheetBack(db: Kysely<DB>, { campaign, viewer }: CampaignPermit<'grade'>): Promise<void> {
-  await clearSheet(db, campaign.id, viewer.id)
+/** Gives back these of the person's sheet, or all of it, so that others get them at once. */
+export async function giveSheetBack(
+  db: Kysely<DB>,
+  { campaign, viewer }: CampaignPermit<'grade'>,
+  candidateIds: readonly number[] | null = null,
+): Promise<void> {
+  await clearSheet(db, campaign.id, viewer.id, candidateIds)
 }

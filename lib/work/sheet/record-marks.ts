@@ -1,7 +1,9 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import {
+  clearSheet,
   insertMarks,
+  layBackOnSheet,
   listCandidatesToPass,
   listMarksByUid,
   listStandingMarks,
@@ -12,6 +14,7 @@ import type { DB } from '@/db/schema'
 import { isoTime } from '@/lib/platform/clock'
 import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import type { CampaignPermit } from '@/lib/work/people/permission'
+import { LEASE_MS } from '@/lib/work/queue/lease-time'
 import { firstPassOf, type FirstPassState } from './first-pass'
 import { assertPasses } from './may-pass'
 import type { MarkInput } from './mark-input'
@@ -52,7 +55,7 @@ export async function recordMarks(
       else answer.saved.push(mark.id)
       if (!sentence && !known.has(mark.id)) {
         taken.push(mark)
-        known.set(mark.id, { uid: mark.id, candidateId: mark.candidate, personId: viewer.id })
+        known.set(mark.id, { uid: mark.id, candidateId: mark.candidate, personId: viewer.id, mark: mark.mark })
       }
     }
     const at = isoTime()
@@ -71,6 +74,14 @@ export async function recordMarks(
       transaction,
       taken.flatMap(({ candidate }) => candidates.get(candidate) ?? []),
     )
+    const newest = new Map(taken.map(({ candidate, mark }) => [candidate, mark]))
+    const backs = [...newest].filter(([, mark]) => mark === 'taken back').map(([id]) => id)
+    const passed = [...newest.keys()].filter((id) => !backs.includes(id))
+    await clearSheet(transaction, campaign.id, viewer.id, passed)
+    if (campaign.uses_sheet === 1) {
+      const passer = { campaignId: campaign.id, personId: viewer.id }
+      await layBackOnSheet(transaction, passer, backs, isoTime(LEASE_MS))
+    }
     if (moved && campaign.uses_sheet === 1) await requestConsensus(transaction, campaign.id, CONSENSUS_DELAY_MS)
     return answer
   })
@@ -80,12 +91,13 @@ const uidsOf = (marks: readonly MarkInput[]) => marks.map(({ id }) => id)
 
 function whyNot(
   mark: MarkInput,
-  known: { candidateId: number; personId: number } | undefined,
+  known: { candidateId: number; personId: number; mark: string } | undefined,
   isHere: boolean,
   personId: number,
 ): string | null {
   if (!isHere) return 'There is no such candidate with pictures in this campaign.'
-  if (!known || (known.personId === personId && known.candidateId === mark.candidate)) return null
+  if (!known) return null
+  if (known.personId === personId && known.candidateId === mark.candidate && known.mark === mark.mark) return null
   return 'This id belongs to another mark. Make a new id for each.'
 }
 

@@ -38,11 +38,19 @@ export const POST = route({
   },
 })
 
-/** DELETE: gives the sheet back, so that others get it at once. */
+/** DELETE: gives the sheet back, or the candidates that are named, so that others get them at once. */
 export const DELETE = route({
   params,
-  handler: async ({ db, viewer, params }) => {
-    await giveSheetBack(db, await permitCampaign(db, viewer, params.slug, 'grade'))
+  query: z.strictObject({
+    candidates: z
+      .string()
+      .regex(/^\d{1,15}(,\d{1,15})*$/, 'Name candidates by their numbers, separated by commas.')
+      .transform((text) => text.split(',').map(Number))
+      .refine((ids) => ids.length <= 500, 'Name at most 500 candidates at once.')
+      .optional(),
+  }),
+  handler: async ({ db, viewer, params, query }) => {
+    await giveSheetBack(db, await permitCampaign(db, viewer, params.slug, 'grade'), query.candidates ?? null)
     return Response.json({})
   },
 })
