@@ -129,6 +129,9 @@ const TABLES = [
 const isMerged = (id: string): string =>
   `ifnull((select event from merge where merged_id = ${id} order by id desc limit 1), '') = 'merged'`
 const isCalibration = (id: string): string => `(select truth from candidate where id = ${id}) is not null`
+// Without a conflict clause: within a trigger the one of the statement that fires it would hold (lang_createtrigger.html of SQLite).
+const due = `insert into match_due select new.campaign_id, new.id
+      where not exists (select 1 from match_due where campaign_id = new.campaign_id and candidate_id = new.id)`
 const hasPosition = 'new.truth is null and new.ra_deg is not null and new.dec_deg is not null'
 
 const TRIGGERS = [
@@ -161,11 +164,11 @@ const TRIGGERS = [
   ),
 
   `create trigger candidate_match_due after insert on candidate when ${hasPosition}
-    begin insert or ignore into match_due values (new.campaign_id, new.id); end`,
+    begin ${due}; end`,
   `create trigger candidate_match_due_again after update of ra_deg, dec_deg, truth on candidate
     when (old.ra_deg is not new.ra_deg or old.dec_deg is not new.dec_deg or old.truth is not new.truth)
       and (new.truth is null or old.truth is null)
-    begin insert or ignore into match_due values (new.campaign_id, new.id); end`,
+    begin ${due}; end`,
   `create trigger candidate_matches_nothing after update of truth on candidate when new.truth is not null begin
     delete from object_match where candidate_id = new.id;
     delete from candidate_match where first_id = new.id;
