@@ -60,16 +60,39 @@ describe('stamps that are written together', () => {
     expect(await readStamp(folder, sha256(fresh))).toEqual(fresh)
   })
 
-  it.each(['EMLINK', 'EPERM', 'ENOTSUP'])('are files of their own where names of one file end in %s', async (code) => {
+  it('are named anew where their names lead nowhere', async () => {
     const stamps = [stamp(), stamp()]
-    vi.spyOn(fs, 'linkSync').mockImplementation(failing(code))
+    write(stamps)
+    fs.rmSync(path.join(folder, 'packs'), { recursive: true })
+    expect(await readStamp(folder, sha256(stamps[0]))).toBeNull()
+    write(stamps)
+    for (const bytes of stamps) expect(await readStamp(folder, sha256(bytes))).toEqual(bytes)
+  })
+
+  it('are held once by a copy of the folder', async () => {
+    const stamps = [stamp(), stamp(), stamp()]
+    write(stamps)
+    const copy = `${folder}-copy`
+    try {
+      fs.cpSync(folder, copy, { recursive: true, verbatimSymlinks: true })
+      for (const bytes of stamps) expect(await readStamp(copy, sha256(bytes))).toEqual(bytes)
+      const files = fs.readdirSync(copy, { recursive: true, withFileTypes: true }).filter((entry) => entry.isFile())
+      expect(files).toHaveLength(1)
+    } finally {
+      fs.rmSync(copy, { recursive: true, force: true })
+    }
+  })
+
+  it.each(['EPERM', 'ENOTSUP', 'ENOSYS'])('are files of their own where names of one file end in %s', async (code) => {
+    const stamps = [stamp(), stamp()]
+    vi.spyOn(fs, 'symlinkSync').mockImplementation(failing(code))
     write(stamps)
     for (const bytes of stamps) expect(await readStamp(folder, sha256(bytes))).toEqual(bytes)
     expect(left()).toEqual([])
   })
 
   it('are refused with the reason of a full disk, of which nothing stays', () => {
-    vi.spyOn(fs, 'linkSync').mockImplementation(failing('ENOSPC'))
+    vi.spyOn(fs, 'symlinkSync').mockImplementation(failing('ENOSPC'))
     vi.spyOn(fs, 'writeFileSync').mockImplementation(failing('ENOSPC'))
     expect(() => write([stamp()])).toThrow('ENOSPC')
     expect(left()).toEqual([])

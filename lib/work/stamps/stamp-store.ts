@@ -1,5 +1,5 @@
-import { createHash } from 'node:crypto'
-import { existsSync, linkSync, mkdirSync, renameSync, rmSync, writeFileSync } from 'node:fs'
+import { createHash, randomUUID } from 'node:crypto'
+import { existsSync, mkdirSync, renameSync, rmSync, symlinkSync, writeFileSync } from 'node:fs'
 import { open, readFile, unlink } from 'node:fs/promises'
 import path from 'node:path'
 import { threadId } from 'node:worker_threads'
@@ -9,11 +9,12 @@ import { findInPack, headOfPack, LONGEST_HEAD, MOST_STAMPS, packOf } from './sta
  * Stamps on disk, each under the name `aa/<sha256>` below one folder of their own: unlike blobs they can be made again from the
  * cutouts, so a backup may leave them out.
  *
- * Those of a task are written together into one file (stamp-pack.ts) that has a name for each of them (hard links), because making
- * a file costs several times what drawing a stamp does once other work keeps the disk busy: 26 to 206 microseconds of processor
- * time and up to 1.2 ms each for files of their own, 8 to 14 and 0.05 ms for names of one file (ext4, measured together). A name is
- * given only to a file that is whole. Nothing is synced. A crash of the process loses nothing; a power cut may, and then the
- * hash does not agree when the stamp is read, and it is made again (serve-stamp.ts).
+ * Those of a task are written together into one file below `packs/` (stamp-pack.ts), to which each stamp's name is a symbolic link,
+ * because making a file costs several times what drawing a stamp does once other work keeps the disk busy: 25 microseconds of
+ * processor time and 0.1 to 1.2 ms each for files of their own, 7 to 12 and 0.05 ms for a link (ext4, measured together). Not hard
+ * links: a copy that does not know them, such as `cp -r`, would hold the file once for each of its stamps. A name is given only to
+ * a file that is whole. Nothing is synced. A crash of the process loses nothing; a power cut may, and then the hash does not
+ * agree when the stamp is read, and it is made again (serve-stamp.ts).
  */
 const HASH = /^[0-9a-f]{64}$/
 /** A task's stamps are written in parts of about this size. */
@@ -69,11 +70,14 @@ function writePack(folder: string, stamps: readonly (readonly [string, Uint8Arra
     'incoming',
     `${process.pid}-${threadId}-${serial++}-${Math.trunc(performance.now())}`,
   )
+  const pack = randomUUID()
+  const file = path.join(folder, 'packs', pack.slice(0, 2), pack)
   try {
     inFolder(temporary, () => writeFileSync(temporary, packOf(stamps), { flag: 'wx' }))
-    for (const [sha256] of stamps) name(temporary, stampPath(folder, sha256))
+    inFolder(file, () => renameSync(temporary, file))
+    for (const [sha256] of stamps) name(path.join('..', 'packs', pack.slice(0, 2), pack), stampPath(folder, sha256))
   } catch (error) {
-    // File systems without hard links, or with few to a file, and those that are full: which, the copies show.
+    // File systems without symbolic links, and those that are full: which, the copies show.
     if (codeOf(error) === '') throw error
     for (const [sha256, bytes] of stamps) writeAlone(stampPath(folder, sha256), `${temporary}-alone`, bytes)
   } finally {
@@ -81,12 +85,16 @@ function writePack(folder: string, stamps: readonly (readonly [string, Uint8Arra
   }
 }
 
+/** @param file as seen from the target's folder */
 function name(file: string, target: string): void {
   try {
-    inFolder(target, () => linkSync(file, target))
+    inFolder(target, () => symlinkSync(file, target))
   } catch (error) {
-    // Somebody was quicker. Whether what is there is whole is seen when it is read.
     if (codeOf(error) !== 'EEXIST') throw error
+    // Somebody was quicker, and whether what is there is whole is seen when it is read; or the name leads nowhere.
+    if (existsSync(target)) return
+    rmSync(target, { force: true })
+    symlinkSync(file, target)
   }
 }
 
