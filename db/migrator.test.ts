@@ -33,7 +33,7 @@ describe('migrations', () => {
 
 describe('tables that only grow', () => {
   const GROWS_ONLY =
-    'rule recipe grade run verdict ruling state_change designation entry audit_event judgement_shown measurement'.split(
+    'rule recipe grade run verdict ruling state_change designation entry audit_event judgement_shown measurement match_decision merge'.split(
       ' ',
     )
 
