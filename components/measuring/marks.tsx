@@ -68,8 +68,8 @@ export function Cross({ at, strong = false }: { at: Spot; strong?: boolean }) {
   return <Line d={d} width={strong ? 2.5 : 1.5} className={strong ? 'text-lamp' : 'text-white'} />
 }
 
-export function Label({ at, text }: { at: Spot; text: string }) {
-  const common: SVGProps<SVGTextElement> = { x: at.x, y: at.y, fontSize: 3, textAnchor: 'middle' }
+export function Label({ at, text, size = 3 }: { at: Spot; text: string; size?: number }) {
+  const common: SVGProps<SVGTextElement> = { x: at.x, y: at.y, fontSize: size, textAnchor: 'middle' }
   return (
     <text
       {...common}

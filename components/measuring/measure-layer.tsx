@@ -90,7 +90,7 @@ function OnDesk({ state, frame }: { state: DeskState; frame: Frame }) {
 
 /** The radius on the picture itself, for where the panel is out of sight. */
 function Reading({ text }: { text: string }) {
-  return <Label at={{ x: 50, y: 4 }} text={text} />
+  return <Label at={{ x: 50, y: 4 }} text={text} size={4} />
 }
 
 /** Takes presses and keys. The points are buttons in it, so that each can be reached and moved by keyboard. */
