@@ -17,8 +17,7 @@ export function cellPath(projection: GeoProjection, bounds: CellBounds): string 
   return geoPath(projection).digits(1)({ type: 'Polygon', coordinates: [[...ring, ring[0]]] }) ?? ''
 }
 
-/** Steps of density, each twice the one before, from the least to the most; few enough to be told apart. */
+/** The step of density of a count, 1 to `steps`, by its root: few beside many can still be told apart. */
 export function densityStep(count: number, most: number, steps: number): number {
-  if (most <= 1) return steps
-  return Math.max(1, Math.min(steps, Math.ceil((Math.log(count + 1) / Math.log(most + 1)) * steps)))
+  return Math.max(1, Math.min(steps, Math.ceil(Math.sqrt(count / most) * steps)))
 }

@@ -11,7 +11,7 @@ base, ra, dec, radius, verbosity, maxrec = sys.argv[1:7]
 warnings.simplefilter("ignore")
 service = pyvo.dal.SCSService(base)
 try:
-    pos = SkyCoord(float(ra), float(dec), unit="deg") if abs(float(dec)) <= 90 else (float(ra), float(dec))
+    pos = SkyCoord(float(ra), float(dec), unit="deg")
     more = {} if maxrec == "-" else {"maxrec": maxrec}
     query = service.create_query(pos=pos, radius=float(radius), verbosity=int(verbosity), **more)
     results = query.execute()

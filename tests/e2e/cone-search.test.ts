@@ -95,7 +95,7 @@ describe.skipIf(!hasPyvo)('pyvo', () => {
   })
 
   it('hears in the words of the server what was wrong', () => {
-    expect(askPyvo(base(2), 10, 91, 1).error).toContain('DEC=91.0 is out of range: it lies between -90 and 90 degrees.')
+    expect(askPyvo(base(2), 10, 9, 200).error).toContain('SR=200.0 is out of range: it lies between 0 and 180 degrees.')
     expect(askPyvo(base(2), 10, 9, 1, 1, 'many').error).toContain('MAXREC=many is not a number of entries.')
   })
 
