@@ -38,7 +38,7 @@ export function SkyMap({ id, title, marks }: { id: string; title: string; marks:
   return (
     <svg
       viewBox={`0 0 ${WIDTH} ${height}`}
-      role={isReachable ? 'group' : 'img'}
+      role={marks.kind === 'points' ? 'group' : 'img'}
       aria-labelledby={`${id}-title ${id}-desc`}
       fontSize="11"
       className="block h-auto w-full font-sans"

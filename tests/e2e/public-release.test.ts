@@ -66,7 +66,7 @@ describe('the page of a public release, without script', () => {
   it('is filtered by a form, over right ascension 0 too, and cleared', async () => {
     const page = await open(release(2))
     await page.getByLabel('Near a position').fill('0:00:00 +02:00:00')
-    await page.getByLabel('Within').fill('1.3')
+    await page.getByRole('textbox', { name: 'Within' }).fill('1.3')
     await page.getByRole('button', { name: 'Show' }).click()
     expect(await designations(page)).toHaveLength(5)
     expect(await page.getByRole('heading', { name: '5 entries of 120' }).isVisible()).toBe(true)
@@ -87,7 +87,7 @@ describe('the page of a public release, without script', () => {
 
   it('leads to entries with addresses that stay, their pictures, and the ones beside', async () => {
     const page = await open(release(2))
-    await page.getByRole('link', { name: 'SWS J7', exact: true }).click()
+    await page.getByRole('table').getByRole('link', { name: 'SWS J7', exact: true }).click()
     expect(new URL(page.url()).pathname).toBe(`${release(2)}/SWS-7`)
     expect(await page.getByRole('heading', { level: 1 }).textContent()).toBe('SWS J7')
     expect(await page.getByText('Four of four graders are sure.').isVisible()).toBe(true)
@@ -155,7 +155,7 @@ describe('a release that is not public', () => {
     expect(headers.get('x-robots-tag')).toBe('noindex, nofollow')
     const page = await open(address)
     expect(await page.locator('meta[name=robots]').getAttribute('content')).toContain('noindex')
-    await page.getByRole('link', { name: 'SWS J2', exact: true }).click()
+    await page.getByRole('table').getByRole('link', { name: 'SWS J2', exact: true }).click()
     expect(await page.getByRole('heading', { level: 1 }).textContent()).toBe('SWS J2')
     expect(page.url()).toContain(`key=${TOKEN}`)
     const shown = page.getByRole('img', { name: 'SWS J2, Colour' })
