@@ -1,6 +1,7 @@
 /** The database of this browser in which the bench keeps what must survive a reload, told apart by campaign and person. */
 import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
 import { lookIdOf, type Look } from './bench-session'
+import type { MarkInput } from '@/lib/work/sheet/mark-input'
 import type { RefusedGrade, WaitingGrade } from './grade-outbox'
 
 interface Shape extends DBSchema {
@@ -8,7 +9,12 @@ interface Shape extends DBSchema {
   refused: { key: [string, string]; value: Scoped<RefusedGrade> }
   looks: { key: [string, string]; value: { scope: string; id: string; look: Look } }
   /** Marks of the sheet on their way. */
-  marks: { key: [string, string]; value: { scope: string; id: string; candidate: number; mark: string; at: number } }
+  marks: { key: [string, string]; value: KeptMark & { scope: string } }
+}
+
+/** A mark of the sheet on its way, and when it was made, milliseconds since 1970: their order, among all tabs. */
+export interface KeptMark extends MarkInput {
+  at: number
 }
 
 type Scoped<T> = T & { scope: string; id: string }
@@ -89,6 +95,30 @@ export class BenchStore {
   async forgetLooks(): Promise<void> {
     const db = await this.#open()
     await db.delete('looks', allOf(this.#scope))
+  }
+
+  async marks(): Promise<KeptMark[]> {
+    const db = await this.#open()
+    return (await db.getAll('marks', allOf(this.#scope))).map(({ id, candidate, mark, at }) => ({
+      id,
+      candidate,
+      mark,
+      at,
+    }))
+  }
+
+  async keepMarks(marks: readonly KeptMark[]): Promise<void> {
+    const db = await this.#open()
+    const transaction = db.transaction('marks', 'readwrite', { durability: 'strict' })
+    for (const mark of marks) void transaction.store.put({ ...mark, scope: this.#scope })
+    await transaction.done
+  }
+
+  async forgetMarks(ids: readonly string[]): Promise<void> {
+    const db = await this.#open()
+    const transaction = db.transaction('marks', 'readwrite')
+    for (const id of ids) void transaction.store.delete([this.#scope, id])
+    await transaction.done
   }
 
   async close(): Promise<void> {

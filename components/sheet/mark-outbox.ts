@@ -1,48 +1,49 @@
 /**
- * Marks on their way. Each is kept in the browser, under a name of its own so that tabs do not overwrite each other, before the sheet
- * moves on, and forgotten only once the server has said that it has it: a reload, a lost network or a signed-out hour loses none.
+ * Marks on their way. Each is kept in the browser's database until the server has said that it has it: a reload, a lost network or
+ * a signed-out hour loses none. Tabs share what waits, and it goes in the order in which it was made, whichever tab sends.
  */
+import type { BenchStore, KeptMark } from '@/components/bench/bench-store'
 import { makeUid } from '@/components/bench/make-uid'
 import type { MarkInput } from '@/lib/work/sheet/mark-input'
 import type { PassersProgress } from '@/lib/work/sheet/sheet-progress'
-import { sendMarks, type SheetOwner } from './sheet-api'
+import { olderMarks } from './older-marks'
+import { sendMarks, SheetTrouble, type SheetOwner } from './sheet-api'
 
 export interface OutboxState {
   waiting: number
-  /** What keeps marks from arriving just now, and what the server refused for good. */
-  trouble: string | null
+  /** What keeps marks from arriving just now; signing in may mend it. */
+  trouble: { sentence: string; signIn: boolean } | null
+  /** What the server refused for good. */
   refused: string | null
+  /** Whether the browser keeps what waits; else it is in the memory of this tab alone. */
+  kept: boolean
 }
 
 /** Marks sent in one request. */
 const BATCH = 200
 const FIRST_PAUSE_MS = 2000
 const LONGEST_PAUSE_MS = 30_000
-
-interface KeptMark extends MarkInput {
-  /** Marks go in the order in which they were made. */
-  order: number
-}
+export const EMPTY_MARKS: OutboxState = { waiting: 0, trouble: null, refused: null, kept: true }
 
 export class MarkOutbox {
-  readonly #prefix: string
   readonly #kept = new Map<string, KeptMark>()
+  /** Arrived or refused: a reading that began before does not bring them back. */
+  readonly #settled = new Set<string>()
   readonly #listeners = new Set<() => void>()
-  #state: OutboxState = { waiting: 0, trouble: null, refused: null }
+  #state: OutboxState = EMPTY_MARKS
   #sending: Promise<void> | null = null
   #pause = FIRST_PAUSE_MS
   #timer: ReturnType<typeof setTimeout> | undefined
-  #order = 0
+  #stopped = false
+  #newest = 0
+  onProgress: (progress: PassersProgress) => void = () => {}
 
   constructor(
     readonly owner: SheetOwner,
-    readonly onProgress: (progress: PassersProgress) => void,
-  ) {
-    this.#prefix = `ringside:sheet:${owner.slug}:${owner.personId}:`
-    for (const mark of this.#stored()) this.#kept.set(mark.id, mark)
-    this.#order = Math.max(0, ...[...this.#kept.values()].map(({ order }) => order))
-    this.#tell({})
-  }
+    readonly store: Pick<BenchStore, 'marks' | 'keepMarks' | 'forgetMarks'>,
+    /** Runs one piece of work at a time among all tabs of this person and campaign. */
+    readonly exclusively: (work: () => Promise<void>) => Promise<void>,
+  ) {}
 
   subscribe = (listener: () => void): (() => void) => {
     this.#listeners.add(listener)
@@ -56,76 +57,111 @@ export class MarkOutbox {
     return new Map(this.#inOrder().map(({ candidate, mark }) => [candidate, mark]))
   }
 
+  /** Reads what an earlier visit or another tab left, and sends it. */
+  async open(): Promise<void> {
+    const older = olderMarks(this.owner)
+    for (const mark of older.marks) this.#kept.set(mark.id, mark)
+    if (older.marks.length > 0 && (await this.#keep(older.marks))) older.drop()
+    await this.#read()
+    await this.flush()
+  }
+
   add(marks: readonly Omit<MarkInput, 'id'>[]): void {
-    for (const mark of marks) {
-      const kept = { ...mark, id: makeUid(), order: ++this.#order }
-      this.#kept.set(kept.id, kept)
-      try {
-        localStorage.setItem(this.#prefix + kept.id, JSON.stringify(kept))
-      } catch {
-        this.#tell({ trouble: 'This browser keeps nothing for this page: leave it open until all marks have arrived.' })
-      }
-    }
+    // A clock that was set back must not send the later mark first.
+    const made = marks.map((mark) => {
+      this.#newest = Math.max(Date.now(), this.#newest + 1)
+      return { ...mark, id: makeUid(), at: this.#newest }
+    })
+    for (const mark of made) this.#kept.set(mark.id, mark)
     this.#tell({})
+    void this.#keep(made)
     void this.flush()
   }
 
   /** Sends what waits; settles when it has arrived or there is trouble, after which it is tried again by itself. */
   flush = (): Promise<void> => {
     clearTimeout(this.#timer)
-    this.#sending ??= this.#send().finally(() => {
+    this.#sending ??= this.exclusively(() => this.#send()).finally(() => {
       this.#sending = null
     })
     return this.#sending
   }
 
   stop(): void {
+    this.#stopped = true
     clearTimeout(this.#timer)
   }
 
   async #send(): Promise<void> {
-    for (let batch = this.#inOrder().slice(0, BATCH); batch.length > 0; batch = this.#inOrder().slice(0, BATCH)) {
+    await this.#read()
+    let size = BATCH
+    for (let batch = this.#inOrder().slice(0, size); batch.length > 0; batch = this.#inOrder().slice(0, size)) {
       try {
-        const answer = await sendMarks(
-          this.owner,
-          batch.map(({ id, candidate, mark }) => ({ id, candidate, mark })),
-        )
-        for (const id of [...answer.saved, ...answer.refused.map((one) => one.id)]) this.#forget(id)
+        const marks = batch.map(({ id, candidate, mark }) => ({ id, candidate, mark }))
+        const answer = await sendMarks(this.owner, marks)
+        await this.#forget([...answer.saved, ...answer.refused.map((one) => one.id)])
         this.#pause = FIRST_PAUSE_MS
-        const refused = answer.refused[0]?.sentence ?? this.#state.refused
-        this.#tell({ trouble: null, refused })
+        this.#tell({ trouble: null, refused: answer.refused[0]?.sentence ?? this.#state.refused })
         this.onProgress(answer.progress)
       } catch (error) {
-        this.#tell({ trouble: error instanceof Error ? error.message : 'The server has trouble just now.' })
-        this.#timer = setTimeout(() => void this.flush(), this.#pause)
+        const { sentence, signIn, final } =
+          error instanceof SheetTrouble ? error : new SheetTrouble('The server has trouble just now.')
+        if (final && batch.length > 1) {
+          // One of them cannot be taken: the others can.
+          size = 1
+          continue
+        }
+        if (final) {
+          await this.#forget([batch[0].id])
+          this.#tell({ refused: sentence })
+          continue
+        }
+        this.#tell({ trouble: { sentence, signIn } })
+        if (!this.#stopped) this.#timer = setTimeout(() => void this.flush(), this.#pause)
         this.#pause = Math.min(LONGEST_PAUSE_MS, this.#pause * 2)
         return
       }
     }
   }
 
-  #inOrder(): KeptMark[] {
-    return [...this.#kept.values()].toSorted((a, b) => a.order - b.order)
-  }
-
-  #forget(id: string): void {
-    this.#kept.delete(id)
+  async #read(): Promise<void> {
     try {
-      localStorage.removeItem(this.#prefix + id)
-    } catch {
-      // Sent again at the next visit, which changes nothing.
-    }
-  }
-
-  *#stored(): Iterable<KeptMark> {
-    try {
-      const names = Array.from({ length: localStorage.length }, (_, n) => localStorage.key(n) ?? '')
-      for (const name of names) {
-        if (name.startsWith(this.#prefix)) yield JSON.parse(localStorage.getItem(name) ?? '') as KeptMark
+      for (const mark of await this.store.marks()) {
+        if (!this.#settled.has(mark.id)) this.#kept.set(mark.id, mark)
+        this.#newest = Math.max(this.#newest, mark.at)
       }
+      if (this.#state.waiting !== this.#kept.size) this.#tell({})
     } catch {
-      // Nothing is kept, or it cannot be read.
+      this.#tell({ kept: false })
     }
+  }
+
+  async #keep(marks: readonly KeptMark[]): Promise<boolean> {
+    try {
+      await this.store.keepMarks(marks)
+      // It may have arrived while it was written.
+      const gone = marks.map(({ id }) => id).filter((id) => this.#settled.has(id))
+      if (gone.length > 0) await this.store.forgetMarks(gone)
+      if (!this.#state.kept) this.#tell({ kept: true })
+      return true
+    } catch {
+      this.#tell({ kept: false })
+      return false
+    }
+  }
+
+  #inOrder(): KeptMark[] {
+    return [...this.#kept.values()].toSorted((a, b) => a.at - b.at)
+  }
+
+  /** What cannot be forgotten is sent once more at the next visit, which changes nothing. */
+  async #forget(ids: readonly string[]): Promise<void> {
+    for (const id of ids) {
+      this.#settled.add(id)
+      this.#kept.delete(id)
+    }
+    this.#tell({})
+    await this.store.forgetMarks(ids).catch(() => {})
   }
 
   #tell(change: Partial<OutboxState>): void {

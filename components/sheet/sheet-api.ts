@@ -17,24 +17,45 @@ const ANSWER_MS = 30_000
 const address = ({ slug }: SheetOwner) => `/api/campaigns/${encodeURIComponent(slug)}/sheet`
 const whose = ({ personId }: SheetOwner) => ({ [HEADER]: String(personId) })
 
-async function sentenceOf(response: Response): Promise<string> {
-  if (response.status === 401) return 'You are signed out. Marks are kept here and go once you are signed in again.'
-  const body = (await response.json().catch(() => null)) as { detail?: unknown } | null
-  return typeof body?.detail === 'string' ? body.detail : `The server answered ${response.status}.`
+/** Why nothing usable came back. */
+export class SheetTrouble extends Error {
+  constructor(
+    readonly sentence: string,
+    /** Signing in mends it. */
+    readonly signIn = false,
+    /** It is about what was sent: sending it again will not help. */
+    readonly final = false,
+  ) {
+    super(sentence)
+  }
 }
 
-/** @throws Error with a sentence when nothing usable comes back. */
-async function answerOf<T>(asked: Promise<Response>): Promise<T> {
+async function troubleOf(response: Response): Promise<SheetTrouble> {
+  if (response.status === 401) {
+    return new SheetTrouble('You are signed out. Marks are kept here and go once you are signed in again.', true)
+  }
+  const body = (await response.json().catch(() => null)) as { type?: unknown; detail?: unknown } | null
+  const sentence = typeof body?.detail === 'string' ? body.detail : `The server answered ${response.status}.`
+  const ours = typeof body?.type === 'string' && body.type.startsWith('urn:ringside:')
+  return new SheetTrouble(sentence, false, ours && response.status === 422)
+}
+
+/** @throws SheetTrouble when nothing usable comes back. */
+async function answerOf<T>(asked: Promise<Response>, isWhole: (answer: T) => boolean): Promise<T> {
   const response = await asked.catch(() => {
-    throw new Error('The server cannot be reached.')
+    throw new SheetTrouble('The server cannot be reached.')
   })
-  if (!response.ok) throw new Error(await sentenceOf(response))
-  return (await response.json()) as T
+  if (!response.ok) throw await troubleOf(response)
+  const answer = (await response.json().catch(() => null)) as T | null
+  // The sign-in page of a hotel's network answers 200 as well.
+  if (!answer || !isWhole(answer)) throw new SheetTrouble('Something else than Ringside answers under its address.')
+  return answer
 }
 
 export const askSheet = (owner: SheetOwner, count: number) =>
   answerOf<LentSheet & { progress: PassersProgress }>(
     fetch(`${address(owner)}?count=${count}`, { cache: 'no-store', headers: whose(owner) }),
+    ({ stamps }) => Array.isArray(stamps),
   )
 
 export const sendMarks = (owner: SheetOwner, marks: readonly MarkInput[]) =>
@@ -47,9 +68,15 @@ export const sendMarks = (owner: SheetOwner, marks: readonly MarkInput[]) =>
       keepalive: true,
       signal: AbortSignal.timeout(ANSWER_MS),
     }),
+    ({ saved, refused }) => Array.isArray(saved) && Array.isArray(refused),
   )
 
 /** Best effort: what is not given back runs out by itself. */
-export function giveBackSheet(owner: SheetOwner): void {
-  void fetch(address(owner), { method: 'DELETE', keepalive: true, headers: whose(owner) }).catch(() => {})
+export function giveBackSheet(owner: SheetOwner, ids: readonly number[]): void {
+  if (ids.length === 0) return
+  void fetch(`${address(owner)}?candidates=${ids.join(',')}`, {
+    method: 'DELETE',
+    keepalive: true,
+    headers: whose(owner),
+  }).catch(() => {})
 }

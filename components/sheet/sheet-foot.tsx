@@ -6,6 +6,7 @@ import { KeyCap } from '@/components/ui/key-cap'
 /** The one action of the sheet, its confirmation, and the way back. */
 export function SheetFoot({
   rest,
+  unseen,
   page,
   confirming,
   lastDropped,
@@ -14,7 +15,10 @@ export function SheetFoot({
   onCancel,
   onUndo,
 }: {
+  /** How many would be dropped. */
   rest: number
+  /** How many nobody has seen: they stay for the next page. */
+  unseen: number
   page: number
   confirming: boolean
   /** How many the page before dropped; null where there is none to go back to. */
@@ -29,7 +33,8 @@ export function SheetFoot({
       {confirming ? (
         <div role="group" aria-label="Confirm" className="flex flex-wrap items-center gap-2">
           <p role="status" className="text-small">
-            {rest === 1 ? '1 stamp goes' : `${rest} stamps go`} no further, {page - rest} to the bench.
+            {rest === 1 ? '1 stamp goes' : `${rest} stamps go`} no further, {page - rest - unseen} to the bench.
+            {unseen > 0 ? ` ${unseen} not seen yet ${unseen === 1 ? 'stays' : 'stay'} for the next page.` : ''}
           </p>
           <Button tone="lamp" autoFocus onClick={onFinish}>
             Drop {rest} <KeyCap>N</KeyCap>
@@ -39,9 +44,18 @@ export function SheetFoot({
           </Button>
         </div>
       ) : page > 0 ? (
-        <Button tone="lamp" onClick={rest > 0 ? onAsk : onFinish}>
-          {rest === 0 ? 'Next page' : rest === page ? `Drop all ${rest}` : `Drop the other ${rest}`} <KeyCap>N</KeyCap>
-        </Button>
+        <>
+          <Button tone="lamp" onClick={rest > 0 ? onAsk : onFinish} disabled={unseen === page}>
+            {rest === 0 ? 'Next page' : rest === page ? `Drop all ${rest}` : `Drop the other ${rest}`}{' '}
+            <KeyCap>N</KeyCap>
+          </Button>
+          {unseen > 0 ? (
+            <p className="text-small text-mute">
+              {unseen === page ? 'None' : unseen} of this page {unseen === page || unseen > 1 ? 'have' : 'has'}
+              {unseen === page ? ' been seen yet.' : ' not been seen yet: scroll, or wait for the pictures.'}
+            </p>
+          ) : null}
+        </>
       ) : null}
       {lastDropped === null || confirming ? null : (
         <p role="status" className="flex items-center gap-2 text-small text-mute">

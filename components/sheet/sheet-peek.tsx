@@ -14,6 +14,7 @@ export function SheetPeek({
   onToggle,
   onMove,
   onClose,
+  onPicture,
 }: {
   stamp: SheetStamp
   sent: boolean
@@ -22,6 +23,7 @@ export function SheetPeek({
   onToggle: () => void
   onMove: (by: 'left' | 'right') => void
   onClose: () => void
+  onPicture: () => void
 }) {
   const shown = stamp.views[Math.min(view, stamp.views.length - 1)]
   return (
@@ -30,6 +32,7 @@ export function SheetPeek({
         {shown?.url ? (
           <img
             src={shown.url}
+            onLoad={onPicture}
             alt={`${stamp.name}, ${shown.label}`}
             width={shown.width}
             height={shown.height}

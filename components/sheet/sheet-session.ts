@@ -3,7 +3,7 @@ import type { SheetStamp } from '@/lib/work/sheet/lend-sheet'
 
 export const PAGE = 60
 
-interface DonePage {
+export interface DonePage {
   stamps: SheetStamp[]
   dropped: number[]
 }
@@ -13,6 +13,8 @@ export interface SheetSession {
   supply: SheetStamp[]
   sent: ReadonlySet<number>
   done: DonePage[]
+  /** Dropped on pages before those that can be brought back. */
+  droppedBefore: number
   /** Place on the page. */
   at: number
   confirming: boolean
@@ -23,6 +25,7 @@ export const emptySession: SheetSession = {
   supply: [],
   sent: new Set(),
   done: [],
+  droppedBefore: 0,
   at: 0,
   confirming: false,
   enlarged: false,
@@ -34,13 +37,21 @@ export type SheetStep =
   | { do: 'toggle'; at: number }
   | { do: 'confirm'; on: boolean }
   | { do: 'enlarge'; on: boolean }
-  | { do: 'finish' }
+  /** `seen`: what had its picture in sight; the rest of the page is for nobody to drop. */
+  | { do: 'finish'; seen: ReadonlySet<number> }
+  /** What was done in this window before a reload. */
+  | { do: 'recall'; done: DonePage[]; sent: readonly number[]; droppedBefore: number }
   | { do: 'undo' }
 
 export const pageOf = ({ supply }: SheetSession): SheetStamp[] => supply.slice(0, PAGE)
 
 /** Those of the page that would be dropped. */
-export const restOf = (session: SheetSession): SheetStamp[] => pageOf(session).filter(({ id }) => !session.sent.has(id))
+export const restOf = (session: SheetSession, seen: ReadonlySet<number>): SheetStamp[] =>
+  pageOf(session).filter(({ id }) => !session.sent.has(id) && seen.has(id))
+
+/** Those of the page that nobody has seen: they stay. */
+export const unseenOf = (session: SheetSession, seen: ReadonlySet<number>): SheetStamp[] =>
+  pageOf(session).filter(({ id }) => !session.sent.has(id) && !seen.has(id))
 
 /** `passed`: candidates that have been marked already, though the server may not know it yet. */
 export function step(session: SheetSession, action: SheetStep): SheetSession {
@@ -66,14 +77,27 @@ export function step(session: SheetSession, action: SheetStep): SheetSession {
     case 'enlarge':
       return { ...session, enlarged: action.on && page.length > 0, confirming: false }
     case 'finish': {
-      const dropped = restOf(session).map(({ id }) => id)
+      const dropped = restOf(session, action.seen).map(({ id }) => id)
+      const unseen = unseenOf(session, action.seen)
+      const gone = page.filter((stamp) => !unseen.includes(stamp))
+      if (gone.length === 0) return { ...session, confirming: false }
       return {
         ...session,
-        supply: session.supply.slice(page.length),
-        done: [...session.done, { stamps: page, dropped }],
+        supply: [...unseen, ...session.supply.slice(page.length)],
+        done: [...session.done, { stamps: gone, dropped }],
         at: 0,
         confirming: false,
         enlarged: false,
+      }
+    }
+    case 'recall': {
+      const here = new Set(action.done.flatMap(({ stamps }) => stamps.map(({ id }) => id)))
+      return {
+        ...session,
+        supply: session.supply.filter(({ id }) => !here.has(id)),
+        done: [...action.done, ...session.done],
+        sent: new Set([...action.sent, ...session.sent]),
+        droppedBefore: action.droppedBefore,
       }
     }
     case 'undo': {

@@ -14,7 +14,7 @@ import { SheetFoot } from './sheet-foot'
 import { SheetGrid } from './sheet-grid'
 import { placeAfter, sheetCommandOf, type SheetCommand } from './sheet-keys'
 import { SheetPeek } from './sheet-peek'
-import { pageOf, restOf } from './sheet-session'
+import { pageOf, restOf, unseenOf } from './sheet-session'
 import { useSheet } from './use-sheet'
 
 const many = (count: number) => count.toLocaleString('en')
@@ -31,12 +31,13 @@ export function Sheet({
   personId: number
   first: LentSheet & { progress: PassersProgress }
 }) {
-  const { session, progress, outbox, exhausted, run } = useSheet({ slug, personId }, first)
+  const { session, progress, outbox, seen, exhausted, trouble, run } = useSheet({ slug, personId }, first)
   const [keysOn, setKeysOn] = useKeySwitch(personId)
   const [view, setView] = useState(0)
   const grid = useRef<HTMLUListElement>(null)
   const page = pageOf(session)
-  const rest = restOf(session).length
+  const rest = restOf(session, seen.seen).length
+  const unseen = unseenOf(session, seen.seen).length
   const stamp = page[session.at]
   const lastDone = session.done.at(-1)
   const keyName = useCallback((key: string) => (keysOn || key === 'Esc' ? key : null), [keysOn])
@@ -83,7 +84,7 @@ export function Sheet({
   }, [pages])
 
   const sittingSent = session.sent.size
-  const sittingDropped = session.done.reduce((sum, { dropped }) => sum + dropped.length, 0)
+  const sittingDropped = session.done.reduce((sum, { dropped }) => sum + dropped.length, session.droppedBefore)
   return (
     <KeyNames.Provider value={keyName}>
       <div className="night fixed inset-0 flex flex-col bg-bench text-text [color-scheme:dark]">
@@ -116,13 +117,24 @@ export function Sheet({
           </p>
         </header>
         <main className="min-h-0 flex-1 overflow-y-auto px-3 py-3 md:px-6">
-          {outbox.trouble ? (
+          {outbox.trouble || (outbox.waiting > 0 && !outbox.kept) ? (
             <div className="mb-3">
               <Notice tone="alarm">
-                {outbox.trouble}{' '}
-                {outbox.waiting > 0
+                {outbox.trouble?.sentence}{' '}
+                {outbox.waiting > 0 && outbox.kept
                   ? `${counted(outbox.waiting, 'mark')} ${outbox.waiting === 1 ? 'is' : 'are'} kept here and sent again.`
                   : ''}
+                {outbox.waiting > 0 && !outbox.kept
+                  ? 'This browser keeps nothing for this site: leave this tab open until all marks have arrived.'
+                  : ''}
+                {outbox.trouble?.signIn ? (
+                  <a
+                    href={`/signin?next=${encodeURIComponent(`/campaigns/${slug}/sheet`)}`}
+                    className="ml-2 underline underline-offset-4"
+                  >
+                    Sign in and come back here
+                  </a>
+                ) : null}
               </Notice>
             </div>
           ) : null}
@@ -137,6 +149,7 @@ export function Sheet({
               sent={session.sent}
               at={session.at}
               gridRef={grid}
+              seen={seen}
               onToggle={(place) => run({ do: 'toggle', at: place })}
               onFocus={(place) => (place === session.at ? undefined : run({ do: 'go', to: place }))}
               onEnlarge={(place) => {
@@ -145,12 +158,13 @@ export function Sheet({
               }}
             />
           ) : (
-            <SheetEnd slug={slug} waiting={progress.toCome} exhausted={exhausted} />
+            <SheetEnd slug={slug} waiting={progress.toCome} exhausted={exhausted} trouble={trouble} />
           )}
         </main>
         <footer className="border-t border-line px-3 py-2 md:px-6">
           <SheetFoot
             rest={rest}
+            unseen={unseen}
             page={page.length}
             confirming={session.confirming}
             lastDropped={lastDone ? lastDone.dropped.length : null}
@@ -179,6 +193,7 @@ export function Sheet({
             onView={setView}
             onToggle={() => run({ do: 'toggle', at: session.at })}
             onMove={(by) => obey({ do: 'move', by })}
+            onPicture={() => seen.show(stamp.id)}
             onClose={() => {
               run({ do: 'enlarge', on: false })
               focusStamp(session.at)
@@ -190,12 +205,24 @@ export function Sheet({
   )
 }
 
-function SheetEnd({ slug, waiting, exhausted }: { slug: string; waiting: number; exhausted: boolean }) {
-  const [title, about] = !exhausted
-    ? ['The next page is coming', 'It has been asked for.']
-    : waiting > 0
-      ? ['The rest lies on other people’s sheets', 'What they leave comes back here within 20 minutes.']
-      : ['The first pass is through', 'What was sent on is at the bench. Candidates that come in later wait here.']
+function SheetEnd({
+  slug,
+  waiting,
+  exhausted,
+  trouble,
+}: {
+  slug: string
+  waiting: number
+  exhausted: boolean
+  trouble: string | null
+}) {
+  const [title, about] = trouble
+    ? ['The next page has not come', `${trouble} It is asked for again every few seconds.`]
+    : !exhausted
+      ? ['The next page is coming', 'It has been asked for.']
+      : waiting > 0
+        ? ['The rest lies on other people’s sheets', 'What they leave comes back here within 20 minutes.']
+        : ['The first pass is through', 'What was sent on is at the bench. Candidates that come in later wait here.']
   return (
     <div className="grid h-full place-items-center">
       <div className="flex max-w-md flex-col items-start gap-3">

@@ -24,7 +24,20 @@ afterAll(async () => {
 
 const stamps = (page: Page) => page.getByRole('button', { name: /send on$/ })
 const waiting = (page: Page) =>
-  page.evaluate(() => Object.keys(localStorage).filter((name) => name.startsWith('ringside:sheet:')).length)
+  page.evaluate(
+    () =>
+      new Promise<number>((resolve, reject) => {
+        const opening = indexedDB.open('ringside-bench')
+        opening.onerror = () => reject(new Error('No database.'))
+        opening.onsuccess = () => {
+          const counting = opening.result.transaction('marks').objectStore('marks').count()
+          counting.onsuccess = () => {
+            opening.result.close()
+            resolve(counting.result)
+          }
+        }
+      }),
+  )
 
 async function openSheet(page: Page, count: number): Promise<void> {
   await page.goto(`${server.url}${HOME}/sheet`, { waitUntil: 'networkidle' })
