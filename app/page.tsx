@@ -1,4 +1,5 @@
 import type { Metadata } from 'next'
+import { WaitingNotice } from '@/components/bench/waiting-notice'
 import { CampaignCards, NoCampaigns } from '@/components/campaigns/campaign-cards'
 import { counted } from '@/components/campaigns/in-words'
 import { PageHead } from '@/components/campaigns/page-head'
@@ -28,6 +29,7 @@ export default async function HomePage() {
           </ButtonLink>
         ) : null}
       </PageHead>
+      <WaitingNotice personId={viewer.id} />
       {cards.length ? <CampaignCards cards={cards} /> : <NoCampaigns mayCreate={mayCreate} email={viewer.email} />}
     </SiteFrame>
   )

@@ -1,4 +1,5 @@
 import { permitPage } from '@/app/_lib/page-permit'
+import { WaitingNotice } from '@/components/bench/waiting-notice'
 import { Shell, type ShellLink } from '@/components/shell/shell'
 import { campaignCounts } from '@/lib/work/campaigns/campaign-counts'
 import { practiceUseful } from '@/lib/work/calibration/practice'
@@ -50,6 +51,7 @@ export default async function CampaignLayout({ params, children }: LayoutProps<'
       links={links}
       waiting={{ home, url: `/api/campaigns/${slug}/waiting`, initial: await waitingFor(db, permit) }}
     >
+      {permit.role === 'viewer' ? null : <WaitingNotice personId={permit.viewer.id} className="px-5 pt-4 md:px-10" />}
       {children}
     </Shell>
   )
