@@ -26,7 +26,6 @@ const ORDERS = {
   radius: sql`einstein_radius_arcsec`,
 }
 export type EntryOrder = keyof typeof ORDERS
-export const ENTRY_ORDERS = Object.keys(ORDERS) as EntryOrder[]
 
 type Query = SelectQueryBuilder<DB, 'release_entry', object>
 

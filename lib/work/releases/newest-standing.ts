@@ -38,7 +38,8 @@ export async function allPublicReleases(db: Kysely<DB>): Promise<PublicReleases[
 
 async function withFates(db: Kysely<DB>, rows: readonly ReleaseRow[]): Promise<PublicReleases> {
   const releases: PublicRelease[] = []
-  for (const release of rows) {
+  // By number, since a clock can be set back.
+  for (const release of rows.toSorted((a, b) => b.number - a.number)) {
     const notices = (await listNoticesOf(db, release.id)).filter((one) => one.access === 'public' && one.made === 1)
     releases.push({
       release,

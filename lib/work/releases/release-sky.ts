@@ -17,7 +17,7 @@ export type ReleaseSky = { extent: SkyExtent | null; entries: number } & (
 )
 
 /** Beyond this many, single points would hide how dense they lie. */
-export const MOST_POINTS = 2000
+const MOST_POINTS = 2000
 /** A survey has about this many cells across. */
 const CELLS_ACROSS = 20
 const WHOLE_SKY_RADIUS_DEG = 90
@@ -54,7 +54,7 @@ async function makeSky(db: Kysely<DB>, releaseId: number): Promise<ReleaseSky> {
   return places.length <= MOST_POINTS ? { ...about, kind: 'points', points } : { ...about, ...inCells(places, extent) }
 }
 
-export function inCells(
+function inCells(
   places: readonly SkyPosition[],
   extent: SkyExtent | null,
 ): { kind: 'cells'; cells: SkyCell[]; cellAreaDeg2: number } {
