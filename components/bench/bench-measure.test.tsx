@@ -12,13 +12,13 @@ describe('ruler and circle', () => {
   it('measure by key in arcseconds and degrees east of north: an arrow moves one pixel, with Shift ten', async () => {
     const { user } = await open()
     await user.keyboard('r')
-    expect(reading()).toBe('2.88″, 270° east of north')
+    expect(reading()).toBe('2.88″, 90° east of north')
     await user.keyboard('{ArrowRight}')
-    expect(reading()).toBe('3.08″, 270° east of north')
+    expect(reading()).toBe('3.08″, 90° east of north')
     await user.keyboard('{Shift>}{ArrowRight}{/Shift}')
-    expect(reading()).toBe('5.08″, 270° east of north')
+    expect(reading()).toBe('5.08″, 90° east of north')
     await user.keyboard('{Enter}{ArrowLeft}')
-    expect(reading()).toBe('5.28″, 270° east of north')
+    expect(reading()).toBe('5.28″, 90° east of north')
     expect(
       screen.getByRole('button', { name: /^View 1/, pressed: true }),
       'the arrows change no view',
@@ -48,7 +48,7 @@ describe('ruler and circle', () => {
     expect(layer()).toBeNull()
     await look()
     await user.keyboard('r')
-    expect(reading()).toBe('2.88″, 270° east of north')
+    expect(reading()).toBe('2.88″, 90° east of north')
   })
 
   it('are dragged anywhere by a pointer, by as much as it moves, and change or blink no view meanwhile', async () => {
@@ -61,10 +61,10 @@ describe('ruler and circle', () => {
     fireEvent.pointerMove(box, { ...at, clientX: 700, clientY: 400 })
     fireEvent.pointerUp(box, at)
     // The end at 144 px from the middle goes 200 px up: hypot(144, 200) / 10 pixels of 0.2 arcsec.
-    expect(reading()).toBe('4.93″, 324° east of north')
+    expect(reading()).toBe('4.93″, 144° east of north')
     expect(screen.getByRole('button', { name: /^View 1/, pressed: true })).toBeInTheDocument()
     fireEvent.pointerMove(box, { ...at, clientX: 10, clientY: 10 })
-    expect(reading(), 'let go').toBe('4.93″, 324° east of north')
+    expect(reading(), 'let go').toBe('4.93″, 144° east of north')
   })
 
   it('widen a circle by its edge', async () => {
@@ -83,7 +83,7 @@ describe('ruler and circle', () => {
     const { user } = await open()
     await user.keyboard('rm')
     await user.keyboard('{ArrowRight}r')
-    expect(reading()).toBe('2.88″, 270° east of north')
+    expect(reading()).toBe('2.88″, 90° east of north')
     expect(screen.getByRole('textbox')).toHaveValue('r')
   })
 })

@@ -122,6 +122,7 @@ describe('a grade on its way', () => {
     await user.keyboard('a')
     await waitFor(() => expect(saved()).toBe('All grades saved'))
     await look()
+    room.queue = supply([2, 3], { given: 1, left: 2 })
     room.answerGrade = () => refusal('judgement-seen', detail)
     await user.keyboard('z')
     await look()

@@ -57,7 +57,7 @@ export function BenchSide({
       ) : null}
       {/* One row whatever is said in it, so that the picture keeps its size. */}
       <div
-        className={`flex items-center justify-between gap-x-3 md:contents short:flex short:flex-wrap ${bench.remarkOpen ? 'flex-wrap' : ''}`}
+        className={`flex items-center justify-between gap-x-3 md:contents short:flex short:flex-wrap ${bench.remarkOpen ? 'min-h-11 md:flex-wrap' : ''}`}
       >
         {look ? (
           <RemarkBox

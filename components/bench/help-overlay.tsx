@@ -13,6 +13,9 @@ import type { Keys } from './use-keys'
 export function HelpOverlay({ keys, onClose, onChange }: { keys: Keys; onClose: () => void; onChange: () => void }) {
   return (
     <BenchDialog title="Keys at the bench" onClose={onClose}>
+      <p className="mt-2 text-note text-mute">
+        Held on the stamp, a mouse or a finger blinks too; swept sideways, it changes the view. Neither ever grades.
+      </p>
       <KeyNames.Provider value={(key) => keyOf(keys.choice, key)}>
         <dl className="mt-4 grid grid-cols-[auto_1fr] items-baseline gap-x-5 gap-y-2 text-small">
           {KEY_TABLE.map(({ keys: names, does }) => (
@@ -25,9 +28,6 @@ export function HelpOverlay({ keys, onClose, onChange }: { keys: Keys; onClose: 
           ))}
         </dl>
       </KeyNames.Provider>
-      <p className="mt-4 text-note text-mute">
-        Held on the stamp, a mouse or a finger blinks too; swept sideways, it changes the view. Neither ever grades.
-      </p>
       <div className="mt-4 border-t border-line pt-4">
         <KeySwitch keys={keys} />
       </div>

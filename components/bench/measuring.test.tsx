@@ -8,8 +8,8 @@ const up = (pixels: number) => ({ x: 0, y: -pixels / 80 })
 
 describe('the ruler', () => {
   it('begins at the middle, inside what is in sight, and tells length and direction from there', () => {
-    expect(readingOf(beginMeasuring(1), 'ruler', picture)).toBe('2.88″, 270° east of north')
-    expect(readingOf(beginMeasuring(2), 'ruler', picture)).toBe('1.44″, 270° east of north')
+    expect(readingOf(beginMeasuring(1), 'ruler', picture)).toBe('2.88″, 90° east of north')
+    expect(readingOf(beginMeasuring(2), 'ruler', picture)).toBe('1.44″, 90° east of north')
   })
 
   it('grows by pixels of the picture at the end that is held', () => {

@@ -69,7 +69,7 @@ const stepOf = (from: Place, to: Place, side: number): StampStep => ({
   down: (to.y - from.y) * side,
 })
 
-/** `1.84″, 37° east of north`. */
+/** `1.84″, 37° east of north`: a line has no beginning, so its position angle is below 180°. */
 export function readingOf({ places }: Measuring, tool: Tool, { side, geometry, raDeg, decDeg }: Measured): string {
   const step = stepOf(...places, side)
   const { lengthArcsec, positionAngleDeg } = measureStep(step, geometry)
@@ -79,7 +79,7 @@ export function readingOf({ places }: Measuring, tool: Tool, { side, geometry, r
       : `${lengthArcsec.toFixed(2)}″`
   if (tool === 'ruler') {
     if (lengthArcsec === 0) return length
-    return `${length}, ${positionAngleDeg === null ? 'direction of north unknown' : `${Math.round(positionAngleDeg) % 360}° east of north`}`
+    return `${length}, ${positionAngleDeg === null ? 'direction of north unknown' : `${Math.round(positionAngleDeg) % 180}° east of north`}`
   }
   const centre = stepOf(MIDDLE, places[0], side)
   const place = raDeg === null || decDeg === null ? null : placeOnSky({ raDeg, decDeg }, centre, geometry)

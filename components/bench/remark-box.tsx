@@ -49,7 +49,8 @@ export function RemarkBox({
     )
   }
   return (
-    <div className="flex w-full flex-col gap-1">
+    // On a phone over the top of the window, out of the keyboard's way, so that the picture keeps its size.
+    <div className="flex w-full flex-col gap-1 max-md:fixed max-md:inset-x-0 max-md:top-0 max-md:z-30 max-md:border-b max-md:border-line max-md:bg-raise max-md:p-3">
       <label htmlFor={REMARK_ID} className="text-note font-semibold text-mute">
         Remark
       </label>
@@ -73,9 +74,18 @@ export function RemarkBox({
         }}
         className="w-full resize-none rounded-control border border-edge bg-well px-2.5 py-1.5 text-base text-text md:text-small"
       />
-      <p id="bench-remark-hint" className="text-note text-mute">
-        Goes with the grade. Enter or Esc closes, Shift+Enter starts a line.
-      </p>
+      <div className="flex items-center justify-between gap-3">
+        <p id="bench-remark-hint" className="text-note text-mute">
+          Goes with the grade.<span className="max-md:hidden"> Enter or Esc closes, Shift+Enter starts a line.</span>
+        </p>
+        <button
+          type="button"
+          onClick={onClose}
+          className="min-h-11 min-w-16 text-small font-semibold underline underline-offset-4 md:hidden"
+        >
+          Done
+        </button>
+      </div>
     </div>
   )
 }

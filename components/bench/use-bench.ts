@@ -4,7 +4,7 @@ import { useEffect, useReducer, useRef, useState } from 'react'
 import type { GradeLetter } from '@/db/schema/grading'
 import { CANNOT_JUDGE_REASONS, TAGS, type CannotJudgeReason } from '@/lib/work/grading/tags'
 import type { LentQueue } from '@/lib/work/queue/lend-next'
-import type { Chooser, Command } from './bench-keys'
+import { RETURNED_FOCUS, type Chooser, type Command } from './bench-keys'
 import {
   currentDraft,
   currentLook,
@@ -148,6 +148,8 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
   }
 
   function settle(): void {
+    // A focus that came back from the remark by itself belongs to the candidate before.
+    document.querySelector<HTMLElement>(`[${RETURNED_FOCUS}]`)?.blur()
     setChooser(null)
     setRemarkOpen(false)
     setBlinking(false)
@@ -173,7 +175,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
 
   function undo(): void {
     if (session.given.length === 0) return setHint('Nothing has been graded in this sitting yet.')
-    if (session.lookingBack === 0) return setHint('This is the first of this sitting.')
+    if (session.lookingBack === 0) return setHint('This is the first of this sitting. K keeps its grade.')
     dispatch({ type: 'went back' })
     settle()
   }
