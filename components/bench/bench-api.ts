@@ -25,9 +25,9 @@ export interface GradeBody {
 export type SendOutcome =
   /**
    * `replaced`: the server had another grade of this person there, which this one corrected. `late`: the candidate had all its looks,
-   * so it counts nowhere.
+   * so it counts nowhere. `called`: the candidate's name, where the person may know it now.
    */
-  | { outcome: 'saved'; replaced?: boolean; late?: boolean }
+  | { outcome: 'saved'; replaced?: boolean; late?: boolean; called?: string }
   /** The server said no to this grade for what it is: asking again will not help. */
   | { outcome: 'refused'; sentence: string }
   /**
@@ -92,7 +92,8 @@ export async function sendGrade(owner: BenchOwner, candidateId: number, body: Gr
     const answer = (await response.json().catch(() => null)) as Partial<RecordedGrade> | null
     // The sign-in page of a hotel's network answers 200 as well.
     if (typeof answer?.grade?.id !== 'string') return { outcome: 'trouble', sentence: SOMETHING_ELSE }
-    return { outcome: 'saved', replaced: typeof answer.replaced === 'string', late: answer.late === true }
+    const { replaced, late, called } = answer
+    return { outcome: 'saved', replaced: typeof replaced === 'string', late: late === true, called }
   }
   if (response.status === 401) {
     return {

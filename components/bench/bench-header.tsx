@@ -8,11 +8,14 @@ export function BenchHeader({
   campaignName,
   counts,
   candidate,
+  called,
 }: {
   slug: string
   campaignName: string
   counts: { given: number; left: number }
   candidate: BenchCandidate | null
+  /** Its name, where it has been told since. */
+  called?: string
 }) {
   const all = (counts.given + counts.left).toLocaleString('en')
   return (
@@ -39,7 +42,7 @@ export function BenchHeader({
       </div>
       {candidate ? (
         <div className="flex min-w-0 flex-wrap items-center gap-x-4">
-          <h1 className="figures truncate text-small font-semibold">{candidate.name}</h1>
+          <h1 className="figures truncate text-small font-semibold">{called ?? candidate.name}</h1>
           {/* On a phone the picture needs the room. */}
           <span className="max-sm:hidden short:hidden">
             <Coordinates key={candidate.id} raDeg={candidate.raDeg} decDeg={candidate.decDeg} />

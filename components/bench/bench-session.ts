@@ -6,7 +6,7 @@ import type { GradeLetter } from '@/db/schema/grading'
 import type { CannotJudgeReason, Tag } from '@/lib/work/grading/tags'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
 import { firstView } from './first-view'
-import { corrected, foundWaiting, givenElsewhere, recalled } from './session-recall'
+import { called, corrected, foundWaiting, givenElsewhere, recalled } from './session-recall'
 
 export interface Draft {
   tags: Tag[]
@@ -20,6 +20,8 @@ export interface Answer extends Draft {
 
 export interface Look {
   candidate: BenchCandidate
+  /** Its name, told once it is judged: before, a grader has its number alone. */
+  called?: string
   answer: Answer
   /** The view in sight when it was given, and the seconds taken. */
   view: string | null
@@ -96,6 +98,7 @@ export type BenchAction =
   | { type: 'given elsewhere'; grades: (LookId & { answer: Answer; first: boolean })[] }
   /** From before a reload. */
   | { type: 'recalled'; looks: Look[]; drafts: Record<number, Draft> }
+  | { type: 'called'; candidateId: number; called: string }
   /** The server has another answer than was remembered, or none. */
   | { type: 'stands'; candidateId: number; answer: Answer | null }
 
@@ -115,7 +118,9 @@ export function openSession(supplied: Supplied): BenchSession {
   }
 }
 
-export function currentLook(session: BenchSession): { candidate: BenchCandidate; answer: Answer | null } | null {
+export function currentLook(
+  session: BenchSession,
+): { candidate: BenchCandidate; answer: Answer | null; called?: string } | null {
   if (session.lookingBack !== null) return session.given[session.lookingBack] ?? null
   const candidate = session.upcoming[0]
   return candidate ? { candidate, answer: null } : null
@@ -181,6 +186,8 @@ export function reduceSession(session: BenchSession, action: BenchAction): Bench
       return givenElsewhere(session, action.grades)
     case 'recalled':
       return recalled(session, action.looks, action.drafts)
+    case 'called':
+      return called(session, action)
     case 'stands':
       return action.answer ? corrected(session, action, action.answer) : refused(session, action)
   }

@@ -68,7 +68,7 @@ export function BenchSide({
             onWrite={bench.writeRemark}
           />
         ) : null}
-        <div className="flex min-w-0 grow items-center justify-end gap-x-3 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 short:mt-0 short:grow short:flex-row short:items-start short:justify-between">
+        <div className="flex min-w-0 grow items-center justify-end gap-x-3 md:sticky md:-bottom-4 md:mt-auto md:grow-0 md:flex-col md:items-start md:gap-2 md:bg-bench md:pt-1 short:static short:mt-0 short:grow short:flex-row short:items-start short:justify-between">
           <SaveLine snapshot={bench.snapshot} slug={slug} onRefused={() => bench.setSheet('refused')} />
           <div className="order-last flex gap-x-4 whitespace-nowrap md:order-first short:order-last">
             <button

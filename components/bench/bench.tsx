@@ -77,6 +77,7 @@ export function Bench({ slug, campaignName, personId, lead, first }: BenchProps)
                 campaignName={campaignName}
                 counts={session.counts}
                 candidate={look?.candidate ?? null}
+                called={look?.called}
               />
               <LastLine
                 session={session}

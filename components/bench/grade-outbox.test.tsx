@@ -36,11 +36,12 @@ function browser() {
         for (const tab of tabs) if (tab !== outbox) void tab.hear(structuredClone(message))
       },
       onRefused: (grade) => refused.push(grade),
+      onCalled: (candidateId, called) => void names.push([candidateId, called]),
       onFound: (grades: readonly WaitingGrade[], where) =>
         found.push([where, grades.map(({ candidateId }) => candidateId)]),
     })
     tabs.push(outbox)
-    return { outbox, sent, refused, found, close: () => (outbox.stop(), tabs.splice(tabs.indexOf(outbox), 1)) }
+    return { outbox, sent, refused, found, names, close: () => (outbox.stop(), tabs.splice(tabs.indexOf(outbox), 1)) }
   }
   return { disk, open, mostWorking: () => mostWorking }
 }

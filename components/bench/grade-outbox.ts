@@ -52,7 +52,7 @@ export type TabMessage =
   | { tell: 'gave'; grade: WaitingGrade }
   /** What was given can be read now. */
   | { tell: 'kept' }
-  | { tell: 'settled'; id: string }
+  | { tell: 'settled'; id: string; candidateId?: number; called?: string }
   | { tell: 'dismissed'; id: string }
   /** What was refused is sent again. */
   | { tell: 'again'; grade: WaitingGrade }
@@ -68,6 +68,8 @@ export interface Surroundings {
   exclusively: (work: () => Promise<void>) => Promise<void>
   tell: (message: TabMessage) => void
   onRefused: (grade: RefusedGrade) => void
+  /** What the candidate of a grade that was taken is called, now that the person may know. */
+  onCalled: (candidateId: number, called: string) => void
   /** Grades that this tab has not given: of an earlier visit, or of another tab. */
   onFound: (grades: readonly WaitingGrade[], where: 'earlier' | 'other tab') => void
 }
@@ -143,6 +145,7 @@ export class GradeOutbox {
     if (message.tell === 'settled') {
       this.#settled.add(message.id)
       this.#mine.delete(message.id)
+      this.#call(message)
     }
     if (message.tell === 'dismissed') this.#dismiss(message.id)
     if (message.tell === 'gave') this.#meet([message.grade], 'other tab')
@@ -215,8 +218,15 @@ export class GradeOutbox {
     if (!this.#stopped) this.#timer = setTimeout(this.flush, pause)
   }
 
-  async #settle(grade: WaitingGrade, answer: SendOutcome & { outcome: 'saved' | 'refused' }): Promise<void> {
-    const { id } = grade.body
+  #call({ candidateId, called }: { candidateId?: number; called?: string }): void {
+    if (candidateId !== undefined && called !== undefined) this.#around.onCalled(candidateId, called)
+  }
+
+  async #settle(sent: WaitingGrade, answer: SendOutcome & { outcome: 'saved' | 'refused' }): Promise<void> {
+    const called = answer.outcome === 'saved' ? answer.called : undefined
+    const grade = { ...sent, name: called ?? sent.name }
+    const { candidateId } = sent
+    const { id } = sent.body
     this.#settled.add(id)
     this.#mine.delete(id)
     const told: RefusedGrade | null =
@@ -236,7 +246,8 @@ export class GradeOutbox {
     if (told && !told.taken) this.#around.onRefused(told)
     if (told) await this.#around.store.keepRefused([told]).catch(() => this.#change({ kept: false }))
     else await this.#drop('waiting', id)
-    this.#around.tell({ tell: 'settled', id })
+    this.#call({ candidateId, called })
+    this.#around.tell({ tell: 'settled', id, candidateId, called })
   }
 
   /** What the database holds, with what this tab holds beside it. */

@@ -86,7 +86,9 @@ export function LastLine({
             {last.answer.grade}
           </b>
           <span className={`whitespace-nowrap ${explaining ? 'hidden md:inline' : ''}`}>
-            {WHAT[session.last?.what ?? 'given']} <span className="figures">{last.candidate.name}</span>
+            {WHAT[session.last?.what ?? 'given']}{' '}
+            {/* Wide enough for most names: one that comes in place of a number moves nothing. */}
+            <span className="figures inline-block min-w-[9ch] text-left">{last.called ?? last.candidate.name}</span>
             {last.answer.reason ? `, ${last.answer.reason}` : ''}
           </span>
           <LineButton label="undo" keyName="Z" onPress={onUndo} />

@@ -9,6 +9,7 @@ import { GradeOutbox, type RefusedGrade, type TabMessage, type WaitingGrade } fr
 
 export interface OutboxListener {
   refused: (grade: RefusedGrade) => void
+  called: (candidateId: number, called: string) => void
   /** Another tab has given these. */
   foundElsewhere: (grades: readonly WaitingGrade[]) => void
 }
@@ -59,6 +60,7 @@ function make(slug: string, personId: number, scope: string): OpenOutbox {
     exclusively: (work) => exclusively(`ringside-outbox:${scope}`, work),
     tell: (message) => void (closed || tabs?.postMessage(message)),
     onRefused: (grade) => made.listener?.refused(grade),
+    onCalled: (candidateId, called) => made.listener?.called(candidateId, called),
     onFound: (grades, where) => void (where === 'other tab' && made.listener?.foundElsewhere(grades)),
   })
   if (tabs) tabs.onmessage = ({ data }: MessageEvent<TabMessage>) => void outbox.hear(data)

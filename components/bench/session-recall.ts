@@ -40,6 +40,16 @@ export function recalled(session: BenchSession, looks: readonly Look[], drafts: 
   }
 }
 
+/** What a candidate that was given a grade is called. */
+export function called(
+  session: BenchSession,
+  { candidateId, called: name }: { candidateId: number; called: string },
+): BenchSession {
+  const isNew = (look: Look) => look.candidate.id === candidateId && (look.called ?? look.candidate.name) !== name
+  if (!session.given.some(isNew)) return session
+  return { ...session, given: session.given.map((look) => (isNew(look) ? { ...look, called: name } : look)) }
+}
+
 /** What stands at the server is another answer than this browser remembers. */
 export function corrected(session: BenchSession, id: LookId, answer: Answer): BenchSession {
   const given = session.given.map((look) => (isLook(look, id) ? { ...look, answer } : look))

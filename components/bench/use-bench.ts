@@ -56,6 +56,7 @@ export function useBench(slug: string, personId: number, first: LentQueue) {
       if (wasFirst) dispatch({ type: 'refused', candidateId: id, turned })
       else if (before) dispatch({ type: 'correction refused', candidateId: id, turned, before })
     },
+    called: (id, called) => dispatch({ type: 'called', candidateId: id, called }),
     found: (grades, where) => {
       const candidateIds = grades.map((grade) => grade.candidateId)
       if (where === 'earlier') return dispatch({ type: 'found waiting', candidateIds, firsts: firstsIn(grades) })

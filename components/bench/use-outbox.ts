@@ -18,12 +18,14 @@ export function useOutbox(
   personId: number,
   on: {
     refused: (grade: RefusedGrade) => void
+    called: (candidateId: number, called: string) => void
     found: (grades: readonly WaitingGrade[], where: 'earlier' | 'other tab') => void
     /** What an earlier visit left has been read. */
     opened: () => void
   },
 ) {
   const refused = useEffectEvent(on.refused)
+  const called = useEffectEvent(on.called)
   const found = useEffectEvent(on.found)
   const opened = useEffectEvent(on.opened)
   const made = useRef<GradeOutbox>(null)
@@ -34,7 +36,7 @@ export function useOutbox(
   useEffect(() => {
     const held = outboxOf(slug, personId)
     let gone = false
-    held.listener = { refused, foundElsewhere: (grades) => found(grades, 'other tab') }
+    held.listener = { refused, called, foundElsewhere: (grades) => found(grades, 'other tab') }
     // The storage of the browser is only there after the first paint.
     // eslint-disable-next-line react-hooks/set-state-in-effect
     setOutbox(held.outbox)

@@ -38,7 +38,7 @@ export function LightSection({
             </span>
           ) : null}
           Light
-          {touched ? <span className="font-normal text-text">changed</span> : null}
+          {touched ? <span className="font-normal text-text @max-[18rem]:hidden">changed</span> : null}
         </button>
         <button
           type="button"

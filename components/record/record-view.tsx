@@ -86,7 +86,9 @@ export function RecordView({
             <dd className="figures">{rateInWords(consistency.near)}</dd>
             <dt className="text-mute">Weighted kappa</dt>
             <dd className="figures">
-              {consistency.kappa === null ? 'undefined: all in one letter' : consistency.kappa.toFixed(2)}
+              {consistency.kappa === null
+                ? 'undefined: all in one letter'
+                : consistency.kappa.toFixed(2).replace('-', '−')}
             </dd>
           </dl>
         )}

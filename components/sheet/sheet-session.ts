@@ -91,6 +91,7 @@ export function step(session: SheetSession, action: SheetStep): SheetSession {
       }
     }
     case 'recall': {
+      if (session.done.length > 0) return session
       const here = new Set(action.done.flatMap(({ stamps }) => stamps.map(({ id }) => id)))
       return {
         ...session,
