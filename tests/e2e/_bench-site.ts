@@ -8,11 +8,12 @@ export const BENCH = `/campaigns/${SLUG}/bench`
 
 /** A server whose one campaign has so many imaged candidates. */
 export async function startBenchSite(candidates: number, search = smallSearch): Promise<TestServer> {
+  // Before the first request: the server hangs up on whoever falls silent for some seconds.
+  const files = search(candidates)
   const dataFolder = await makeDataFolder()
   await seedSite(dataFolder)
   const server = await startTestServer(dataFolder)
   const cookie = await signInCookie(server.url)
-  const files = search(candidates)
   const send = async () => {
     for (let file = files.pop(); file; file = files.pop()) {
       const url = `${server.url}/api/campaigns/${SLUG}/files/${file.name}`
