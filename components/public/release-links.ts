@@ -1,4 +1,4 @@
-import { releasePath } from '@/lib/work/releases/release-address'
+import { releaseFilePath, releasePath } from '@/lib/work/releases/release-address'
 
 /** Of the list of all public releases. These pages use plain links: nothing is fetched ahead, and they work without script. */
 export const ALL_RELEASES = '/r'
@@ -32,7 +32,7 @@ export function releaseLinks(slug: string, number: number, key: string | null): 
     entry: (entryKey) => address(`${base}/${encodeURIComponent(entryKey)}`),
     entryJson: (entryKey) => address(`${base}/${encodeURIComponent(entryKey)}/entry.json`),
     stamp: (entryKey, sha256) => address(`${base}/stamps/${sha256}`, new URLSearchParams({ entry: entryKey })),
-    file: (name) => address(`${base}/files/${encodeURIComponent(name)}`),
+    file: (name) => address(releaseFilePath(slug, number, name)),
     cone: address(`${base}/cone`),
     vosi: (document) => address(`${base}/cone/${document}`),
     // Another release has a secret of its own, if any.

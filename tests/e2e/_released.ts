@@ -10,7 +10,7 @@ import { hashPassword } from '@/lib/work/people/passwords'
 import { addReleaseAt } from '@/tests/_support/released-entries'
 
 export const SLUG = 'north-field'
-export const LEAD = { email: 'avocet@saltmarsh.test', password: 'low tide at dawn' }
+const LEAD = { email: 'avocet@saltmarsh.test', password: 'low tide at dawn' }
 export const TOKEN = 'secret-of-the-link'
 /** Entries of release 2: a row of them, a hundredth of a degree apart, over right ascension 0. */
 export const ENTRIES = 120

@@ -62,7 +62,7 @@ async function metaOf({ db, release, siteUrl, token }: ConeAsk): Promise<Votable
   }
 }
 
-export function noticeInWords({ kind, number, statement }: ReleaseNotice): string {
+function noticeInWords({ kind, number, statement }: ReleaseNotice): string {
   return kind === 'retraction'
     ? `This release is withdrawn by release ${number}: ${statement}`
     : `This release is corrected by release ${number}: ${statement}`

@@ -63,8 +63,8 @@ export interface ReleaseHead {
 /** Changes that a page lists; the file has them all. */
 const MOST_CHANGES = 50
 /** Beyond this many entries a page sorts and searches no more, since SQLite would read them all for it. */
-export const MOST_SORTED = 50_000
-export const ENTRIES_ON_PAGE = 50
+const MOST_SORTED = 50_000
+const ENTRIES_ON_PAGE = 50
 
 /**
  * A release for whoever may read it, by the number in its address.

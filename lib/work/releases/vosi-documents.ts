@@ -58,7 +58,7 @@ export interface ConeService {
 }
 
 /** The base URL of section 2 item 1: it ends in `?`, or in `&` where it has arguments of its own. */
-export const coneBaseUrl = ({ address, key }: Pick<ConeService, 'address' | 'key'>): string =>
+const coneBaseUrl = ({ address, key }: Pick<ConeService, 'address' | 'key'>): string =>
   key === null ? `${address}?` : `${address}?key=${encodeURIComponent(key)}&`
 
 /** `VOSI 1.1 section 4.1`, with the capability that SimpleDALRegExt describes. */
