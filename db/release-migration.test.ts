@@ -3,7 +3,7 @@ import { expect, it } from 'vitest'
 import { migrations } from '@/migrations'
 import { openDatabase } from './connection'
 
-const TABLES = ['release', 'release_access', 'release_candidate', 'release_entry', 'release_file']
+const TABLES = ['release', 'release_access', 'release_candidate', 'release_entry', 'release_file', 'release_given_up']
 
 async function tablesOf(db: ReturnType<typeof openDatabase>): Promise<string[]> {
   const { rows } = await sql<{ name: string }>`

@@ -173,6 +173,10 @@ const TRIGGERS = [
     delete from object_match where candidate_id = new.id;
     delete from candidate_match where first_id = new.id;
     delete from candidate_match where second_id = new.id; end`,
+  `create trigger candidate_of_merge_no_stamp before update of truth on candidate
+    when new.truth is not null and old.truth is null
+      and (exists (select 1 from merge where kept_id = new.id) or exists (select 1 from merge where merged_id = new.id))
+    begin select raise(abort, 'a candidate that was merged is no calibration stamp'); end`,
   // Rows that follow from a candidate go with it.
   `create trigger candidate_unmatched before delete on candidate begin
     delete from match_due where candidate_id = old.id and campaign_id = old.campaign_id;
@@ -195,6 +199,7 @@ const CANDIDATE_TRIGGERS = [
   'candidate_match_due',
   'candidate_match_due_again',
   'candidate_matches_nothing',
+  'candidate_of_merge_no_stamp',
   'candidate_unmatched',
 ]
 const MADE = ['merge', 'match_decision', 'match_due', 'candidate_match', 'object_match', 'reference_object']

@@ -38,7 +38,6 @@ const TABLES = [
     newest_ruling_id integer not null,
     newest_merge_id integer not null,
     newest_measurement_id integer not null,
-    newest_match_id integer not null,
     candidates integer not null check (candidates >= 0),
     entries integer not null check (entries >= 0),
     created_by integer not null references person (id),
@@ -64,10 +63,12 @@ const TABLES = [
     first_pass text not null,
     verdict_id integer references verdict (id),
     ruling_id integer references ruling (id),
-    -- Of the confirmed ones.
+    -- Of the confirmed ones, with what reference lists knew them as: a list of list, name and separation.
     designation text,
+    known_as text check (known_as is null or json_valid(known_as)),
     primary key (release_id, candidate_id),
-    check (state <> 'confirmed' or (ra_deg is not null and dec_deg is not null and designation is not null))
+    check (state <> 'confirmed' or (ra_deg is not null and dec_deg is not null and designation is not null)),
+    check ((state = 'confirmed') = (known_as is not null))
   ) strict, without rowid`,
   `create index release_candidate_entry on release_candidate (release_id, candidate_id) where state = 'confirmed'`,
   ...growsOnly('release_candidate'),
@@ -98,7 +99,7 @@ const TABLES = [
     reason text not null,
     remarks text,
     tags text,
-    -- What reference lists know it as: a list of list, name and separation.
+    -- As it was frozen.
     known_as text not null check (json_valid(known_as)),
     einstein_radius_arcsec real,
     einstein_radius_error_arcsec real,
@@ -116,6 +117,7 @@ const TABLES = [
     unique (release_id, candidate_id)
   ) strict`,
   'create index release_entry_zone on release_entry (release_id, zone, ra_deg, dec_deg)',
+  'create index release_entry_class on release_entry (release_id, class)',
   'create index release_entry_thumbnail on release_entry (release_id, thumbnail) where thumbnail is not null',
   ...growsOnly('release_entry'),
 
@@ -142,11 +144,31 @@ const TABLES = [
   'create index release_access_newest on release_access (release_id, id)',
   'create index release_access_token on release_access (token_hash) where token_hash is not null',
   ...growsOnly('release_access'),
+
+  // A release whose files cannot be made. Its number stays used, and it stands in the way of no other.
+  `create table release_given_up (
+    release_id integer primary key references release (id),
+    reason text not null check (length(trim(reason)) > 0),
+    given_up_by integer not null references person (id),
+    given_up_at text not null
+  ) strict`,
+  ...growsOnly('release_given_up'),
 ]
 
 const made = `exists (select 1 from release_file where release_id = new.release_id and name = 'RELEASE.zip')`
+const givenUp = (id: string): string => `exists (select 1 from release_given_up where release_id = ${id})`
 
 const TRIGGERS = [
+  `create trigger release_corrects_own before insert on release when new.corrects_id is not null and not exists (
+      select 1 from release old where old.id = new.corrects_id and old.campaign_id = new.campaign_id
+        and old.number < new.number and old.kind <> 'retraction' and not ${givenUp('old.id')})
+    begin select raise(abort, 'a release corrects an earlier one of its campaign'); end`,
+  `create trigger release_given_up_made before insert on release_given_up when ${made}
+    begin select raise(abort, 'a release that has its archive is withdrawn, not given up'); end`,
+  ...['release_candidate', 'release_entry', 'release_file'].map(
+    (table) => `create trigger ${table}_given_up before insert on ${table} when ${givenUp('new.release_id')}
+      begin select raise(abort, 'a release that was given up takes nothing more'); end`,
+  ),
   ...['release_candidate', 'release_entry', 'release_file'].map(
     (table) => `create trigger ${table}_complete before insert on ${table} when ${made}
       begin select raise(abort, 'a release that has its archive is complete: publish a new one'); end`,
@@ -160,7 +182,7 @@ const TRIGGERS = [
   ),
 ]
 
-const NAMES = ['release_access', 'release_file', 'release_entry', 'release_candidate', 'release']
+const NAMES = ['release_given_up', 'release_access', 'release_file', 'release_entry', 'release_candidate', 'release']
 
 export async function up(db: Kysely<unknown>): Promise<void> {
   if (await hasColumn(db, 'release', 'number')) return

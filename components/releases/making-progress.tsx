@@ -3,8 +3,9 @@
 import { useRouter } from 'next/navigation'
 import { startTransition, useActionState, useEffect } from 'react'
 import { FormNote } from '@/components/people/form-note'
-import type { FormAction } from '@/components/people/use-kept-form'
+import { useKeptForm, type FormAction } from '@/components/people/use-kept-form'
 import { Button } from '@/components/ui/button'
+import { TextArea } from '@/components/ui/field'
 import { Notice } from '@/components/ui/notice'
 import { ProgressBar } from '@/components/ui/progress-bar'
 import type { ListedRelease } from '@/lib/work/releases/list-releases'
@@ -16,11 +17,13 @@ export function MakingProgress({
   number,
   making,
   again,
+  giveUp,
 }: {
   number: number
   making: NonNullable<ListedRelease['making']>
   /** null for those who may not ask for it */
   again: FormAction | null
+  giveUp: FormAction | null
 }) {
   const router = useRouter()
   const { done, total, error, gaveUp } = making
@@ -38,6 +41,7 @@ export function MakingProgress({
             only its files are missing.
           </p>
           {again ? <MakeAgain action={again} /> : null}
+          {giveUp ? <GiveUp number={number} action={giveUp} /> : null}
         </div>
       </Notice>
     )
@@ -69,5 +73,25 @@ function MakeAgain({ action }: { action: FormAction }) {
         Make them again
       </Button>
     </form>
+  )
+}
+
+function GiveUp({ number, action }: { number: number; action: FormAction }) {
+  const { state, pending, formProps } = useKeptForm(action)
+  return (
+    <details className="w-full text-small">
+      <summary className="min-h-6">Give it up, if they cannot be made</summary>
+      <form {...formProps} className="mt-2 flex max-w-xl flex-col gap-3">
+        <p className="text-mute">
+          Release {number} then stays in this list with your reason, is never opened, and the next release can be
+          published.
+        </p>
+        <FormNote state={state} />
+        <TextArea label="Why" name="reason" rows={2} required maxLength={2000} error={state.errors?.reason} />
+        <Button type="submit" disabled={pending} className="self-start">
+          Give up release {number}
+        </Button>
+      </form>
+    </details>
   )
 }

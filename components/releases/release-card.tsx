@@ -51,8 +51,17 @@ export function ReleaseCard({
           <span className="font-semibold">{noticeInWords(notice)}.</span> {notice.statement}
         </Notice>
       ))}
-      {making ? (
-        <MakingProgress number={number} making={making} again={mayChange ? release.againAction : null} />
+      {release.givenUp !== null ? (
+        <Notice tone="note">
+          <span className="font-semibold">Given up: its files could not be made.</span> {release.givenUp}
+        </Notice>
+      ) : making ? (
+        <MakingProgress
+          number={number}
+          making={making}
+          again={mayChange ? release.againAction : null}
+          giveUp={mayChange ? release.giveUpAction : null}
+        />
       ) : (
         <>
           <Files slug={slug} release={release} />

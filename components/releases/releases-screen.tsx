@@ -9,6 +9,7 @@ import { ReleaseCard } from './release-card'
 export interface ShownRelease extends ListedRelease {
   accessAction: FormAction
   againAction: FormAction
+  giveUpAction: FormAction
 }
 
 /** Every release of the campaign, newest first, with its files and who may read it. */

@@ -1,6 +1,6 @@
 import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
-import type { Decision } from '../schema/matching'
+import type { Decision, ListState } from '../schema/matching'
 import { fromJson } from '../schema/values'
 import { among } from './by-ids'
 
@@ -108,6 +108,22 @@ export async function countDue(db: Kysely<DB>, campaignId: number): Promise<numb
   return row.count
 }
 
+/** Lists that are being read, or that no job has matched to its end since they were last to be. */
+export async function listUnmatchedLists(
+  db: Kysely<DB>,
+  campaignId: number,
+): Promise<{ name: string; state: ListState; hasFailed: boolean }[]> {
+  const { rows } = await sql<{ name: string; state: ListState; hasFailed: 0 | 1 }>`
+    select l.name, l.state, max(ifnull(job.state = 'failed', 0)) as hasFailed
+      from reference_list l left join job on job.campaign_id = l.campaign_id and job.state <> 'done'
+        and job.kind = 'match-list' and json_extract(job.payload, '$.listId') = l.id
+        and not exists (select 1 from job later where later.campaign_id = l.campaign_id and later.kind = 'match-list'
+          and later.state = 'done' and later.id > job.id and later.payload = job.payload)
+      where l.campaign_id = ${campaignId} and (l.state = 'reading' or l.state = 'ready' and job.id is not null)
+      group by l.id order by l.id`.execute(db)
+  return rows.map((row) => ({ ...row, hasFailed: row.hasFailed === 1 }))
+}
+
 export async function deleteDue(db: Kysely<DB>, campaignId: number, candidateIds: readonly number[]): Promise<void> {
   await sql`delete from match_due where campaign_id = ${campaignId} and candidate_id in ${among(candidateIds)}`.execute(
     db,
@@ -141,13 +157,13 @@ export async function listPlacedAfter(
 }
 
 /** A match of a candidate with a row of a list stands until a lead says that they differ; `m` is the match. */
-const standing = sql<SqlBool>`ifnull((select d.decision from match_decision d
+export const standingMatch = sql<SqlBool>`ifnull((select d.decision from match_decision d
   where d.candidate_id = m.candidate_id and d.list_id = m.list_id and d.row_number = m.row_number
   order by d.id desc limit 1), '') <> 'different'`
 
 const matchedIn = (campaignId: number, which: ReturnType<typeof sql>) =>
   sql<SqlBool>`candidate.id in (select m.candidate_id from reference_list l cross join object_match m
-    where l.campaign_id = ${campaignId} and l.state = 'ready' and ${which} and m.list_id = l.id and ${standing})`
+    where l.campaign_id = ${campaignId} and l.state = 'ready' and ${which} and m.list_id = l.id and ${standingMatch})`
 
 /**
  * Whether `candidate` is known from a list in force, as a condition for lists of candidates. For leads and viewers: to a grader it

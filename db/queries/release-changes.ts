@@ -2,7 +2,7 @@ import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateState } from '../schema/intake'
 
-/** The release before that a new one is compared with: the newest with a catalogue. */
+/** The release before that a new one is compared with: the newest with a catalogue that was not given up. */
 export async function findReleaseBefore(
   db: Kysely<DB>,
   campaignId: number,
@@ -14,6 +14,7 @@ export async function findReleaseBefore(
     .where('campaign_id', '=', campaignId)
     .where('number', '<', number)
     .where('kind', '!=', 'retraction')
+    .where('id', 'not in', (e) => e.selectFrom('release_given_up').select('release_id'))
     .orderBy('number', 'desc')
     .limit(1)
     .executeTakeFirst()

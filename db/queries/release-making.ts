@@ -7,6 +7,7 @@ import type { IsoTime, Json } from '../schema/values'
 import type { Insertable } from 'kysely'
 import { among, inCampaign } from './by-ids'
 import { countedAnswers } from './consensus'
+import { standingMatch } from './matching'
 
 export async function insertRelease(db: Kysely<DB>, release: Insertable<ReleaseTable>): Promise<number> {
   const { id } = await db.insertInto('release').values(release).returning('id').executeTakeFirstOrThrow()
@@ -30,15 +31,24 @@ export async function countJudged(
     .execute()
 }
 
+/** What the lists in force know `candidate` as, nearest first, without what a lead has told to differ. */
+const knownAs = sql`(select json_group_array(json_object('list', list, 'name', name, 'separationArcsec', separation)
+    order by separation, list_id, row_number)
+  from (select l.name as list, o.name, m.separation_arcsec as separation, m.list_id, m.row_number
+    from object_match m join reference_list l on l.id = m.list_id and l.state = 'ready'
+      join reference_object o on o.list_id = m.list_id and o.row_number = m.row_number
+    where m.candidate_id = candidate.id and ${standingMatch}))`
+
 /** One statement: what it says of 100,000 candidates takes some tenths of a second. */
 export async function freezeCandidates(db: Kysely<DB>, campaignId: number, releaseId: number): Promise<void> {
   await sql`
     insert into release_candidate
       (release_id, candidate_id, name, ra_deg, dec_deg, lens_redshift, source_redshift, state, first_pass, verdict_id,
-        ruling_id, designation)
+        ruling_id, designation, known_as)
     select ${releaseId}, candidate.id, candidate.name, candidate.ra_deg, candidate.dec_deg, candidate.lens_redshift,
         candidate.source_redshift, candidate.state, candidate.first_pass, candidate.verdict_id, candidate.ruling_id,
-        case when candidate.state = 'confirmed' then designation.designation end
+        case when candidate.state = 'confirmed' then designation.designation end,
+        case when candidate.state = 'confirmed' then ${knownAs} end
       from candidate left join designation on designation.candidate_id = candidate.id
       where ${judged(campaignId)}
       order by candidate.id`.execute(db)
@@ -63,8 +73,8 @@ export async function listConfirmedWithoutPlace(db: Kysely<DB>, campaignId: numb
 export async function newestOfCampaign(
   db: Kysely<DB>,
   campaignId: number,
-): Promise<{ ruling: number; merge: number; measurement: number; match: number; recipeHash: string | null }> {
-  const newest = async (table: 'merge' | 'measurement' | 'match_decision') => {
+): Promise<{ ruling: number; merge: number; measurement: number; recipeHash: string | null }> {
+  const newest = async (table: 'merge' | 'measurement') => {
     const row = await db
       .selectFrom(table)
       .select((e) => e.fn.max('id').as('id'))
@@ -88,7 +98,6 @@ export async function newestOfCampaign(
     ruling: ruling?.id ?? 0,
     merge: await newest('merge'),
     measurement: await newest('measurement'),
-    match: await newest('match_decision'),
     recipeHash: recipe?.hash ?? null,
   }
 }
@@ -213,10 +222,10 @@ export async function countCalibration(
     .execute()
 }
 
-/** The stamps of these candidates by the newest recipe that made any, each view once. */
+/** The stamps of these candidates by the newest recipe up to that of a hash that made any, each view once. */
 export async function listStampsToRelease(
   db: Kysely<DB>,
-  campaignId: number,
+  { campaignId, recipeHash }: { campaignId: number; recipeHash: string | null },
   candidateIds: readonly number[],
 ): Promise<{ candidateId: number; view: string; sha256: string }[]> {
   return db
@@ -228,7 +237,14 @@ export async function listStampsToRelease(
       e
         .selectFrom('stamp as newest')
         .select((n) => n.fn.max('newest.recipe_id').as('id'))
-        .whereRef('newest.candidate_id', '=', 'stamp.candidate_id'),
+        .whereRef('newest.candidate_id', '=', 'stamp.candidate_id')
+        .where('newest.recipe_id', '<=', (n) =>
+          n
+            .selectFrom('recipe')
+            .select((r) => r.fn.max('recipe.id').as('id'))
+            .where('recipe.campaign_id', '=', campaignId)
+            .where('recipe.hash', '=', recipeHash),
+        ),
     )
     .orderBy('candidate_id')
     .orderBy('view')
@@ -250,14 +266,14 @@ export async function findLastEntry(
   return row ?? null
 }
 
+/** Keys of entries that are one of these, or one of these with a number behind it. */
 export async function listTakenKeys(db: Kysely<DB>, releaseId: number, keys: readonly string[]): Promise<Set<string>> {
-  const rows = await db
-    .selectFrom('release_entry')
-    .select('entry_key')
-    .where('release_id', '=', releaseId)
-    .where(sql<SqlBool>`entry_key in (select value from json_each(${JSON.stringify(keys)}))`)
-    .execute()
-  return new Set(rows.map((row) => row.entry_key))
+  const { rows } = await sql<{ key: string }>`
+    select e.entry_key as key from json_each(${JSON.stringify(keys)}) k cross join release_entry e
+      where e.release_id = ${releaseId} and e.entry_key = k.value
+    union select e.entry_key from json_each(${JSON.stringify(keys)}) k cross join release_entry e
+      where e.release_id = ${releaseId} and e.entry_key > k.value || '_' and e.entry_key < k.value || '_:'`.execute(db)
+  return new Set(rows.map(({ key }) => key))
 }
 
 export async function insertReleaseEntries(

@@ -13,6 +13,8 @@ export interface ReleaseRow extends Release {
   tokenHash: string | null
   /** Whether all its files are there. */
   made: 0 | 1
+  /** Why it was left without them; null where it was not. */
+  givenUpReason: string | null
 }
 
 function releases(db: Kysely<DB>) {
@@ -21,8 +23,9 @@ function releases(db: Kysely<DB>) {
   return db
     .selectFrom('release')
     .innerJoin('campaign', 'campaign.id', 'release.campaign_id')
+    .leftJoin('release_given_up', 'release_given_up.release_id', 'release.id')
     .selectAll('release')
-    .select('campaign.slug')
+    .select(['campaign.slug', 'release_given_up.reason as givenUpReason'])
     .select(sql<ReleaseAccess>`coalesce(${newest('access')}, 'private')`.as('access'))
     .select(sql<string | null>`${newest('token_hash')}`.as('tokenHash'))
     .select(
@@ -66,9 +69,13 @@ export async function listPublicReleases(db: Kysely<DB>, slug?: string): Promise
   return rows.filter((row) => row.access === 'public' && row.made === 1)
 }
 
-/** What corrects or withdraws this release, oldest first, whoever may see it. */
+/** What corrects or withdraws this release, oldest first, whoever may see it; what was given up does neither. */
 export async function listNoticesOf(db: Kysely<DB>, releaseId: number): Promise<ReleaseRow[]> {
-  return releases(db).where('release.corrects_id', '=', releaseId).orderBy('release.number').execute()
+  return releases(db)
+    .where('release.corrects_id', '=', releaseId)
+    .where('release_given_up.release_id', 'is', null)
+    .orderBy('release.number')
+    .execute()
 }
 
 /** In the order of the catalogue, after a row number. */
@@ -126,5 +133,15 @@ export async function insertReleaseAccess(
       changed_by: change.changedBy,
       changed_at: change.now,
     })
+    .execute()
+}
+
+export async function insertGivenUp(
+  db: Kysely<DB>,
+  { releaseId, reason, by, now }: { releaseId: number; reason: string; by: number; now: IsoTime },
+): Promise<void> {
+  await db
+    .insertInto('release_given_up')
+    .values({ release_id: releaseId, reason, given_up_by: by, given_up_at: now })
     .execute()
 }

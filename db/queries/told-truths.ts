@@ -13,7 +13,7 @@ export interface KnownTruth {
   grades: 0 | 1
   /** Looked at in the first pass or in practice, or asked for. */
   looks: 0 | 1
-  /** A verdict, a ruling, a place in the catalogue. */
+  /** A verdict, a ruling, a place in the catalogue, another candidate that was merged with it. */
   judged: 0 | 1
 }
 
@@ -34,7 +34,9 @@ export async function listKnownTruths(
       sql<0 | 1>`painted_over is not null`.as('made'),
       some('grade').as('grades'),
       sql<0 | 1>`${some('sheet_mark')} or ${some('practice_answer')} or ${some('asked_look')}`.as('looks'),
-      sql<0 | 1>`state <> 'open' or ${some('verdict')} or ${some('ruling')} or ${some('entry')}`.as('judged'),
+      sql<0 | 1>`state <> 'open' or ${some('verdict')} or ${some('ruling')} or ${some('entry')}
+        or exists (select 1 from merge where kept_id = candidate.id)
+        or exists (select 1 from merge where merged_id = candidate.id)`.as('judged'),
     ])
     .where('campaign_id', '=', campaignId)
     .where('name', 'in', names)

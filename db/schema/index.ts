@@ -39,6 +39,7 @@ import type {
   ReleaseCandidateTable,
   ReleaseEntryTable,
   ReleaseFileTable,
+  ReleaseGivenUpTable,
   ReleaseTable,
 } from './releases'
 import type { AuditEventTable, JobTable, MailTable, SiteTable } from './platform'
@@ -90,6 +91,7 @@ export interface DB {
   release_candidate: ReleaseCandidateTable
   release_entry: ReleaseEntryTable
   release_file: ReleaseFileTable
+  release_given_up: ReleaseGivenUpTable
   release_access: ReleaseAccessTable
   listing: ListingTable
   judged: JudgedTable

@@ -54,7 +54,6 @@ export interface ReleaseTable {
   newest_ruling_id: number
   newest_merge_id: number
   newest_measurement_id: number
-  newest_match_id: number
   candidates: number
   entries: number
   created_by: number
@@ -75,7 +74,9 @@ export interface ReleaseCandidateTable {
   first_pass: 'waiting' | 'sent on' | 'dropped'
   verdict_id: number | null
   ruling_id: number | null
+  /** Of the confirmed ones. */
   designation: string | null
+  known_as: Json<ReleasedLabel[]> | null
 }
 export type ReleaseCandidate = Selectable<ReleaseCandidateTable>
 
@@ -143,4 +144,12 @@ export interface ReleaseAccessTable {
   token_hash: string | null
   changed_by: number
   changed_at: IsoTime
+}
+
+/** A release whose files could not be made, and that was left behind. */
+export interface ReleaseGivenUpTable {
+  release_id: number
+  reason: string
+  given_up_by: number
+  given_up_at: IsoTime
 }

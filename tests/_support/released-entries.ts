@@ -51,7 +51,7 @@ export async function addReleaseAt(
       cosmology: toJson({ model: 'flat LCDM' as const, hubbleConstant: 70, omegaMatter: 0.3 }),
       ...{ recipe_hash: null, run_id: run.id, newest_grade_id: 0, newest_candidate_id: 0, newest_left_out_id: 0 },
       ...{ newest_sheet_mark_id: 0, newest_ruling_id: 0, newest_merge_id: 0, newest_measurement_id: 0 },
-      ...{ newest_match_id: 0, candidates: places.length, entries: places.length },
+      ...{ candidates: places.length, entries: places.length },
       ...{ created_by: personId, created_at: NOW },
     })
     .returning('id')

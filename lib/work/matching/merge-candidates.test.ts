@@ -2,6 +2,7 @@ import fc from 'fast-check'
 import type { Kysely } from 'kysely'
 import { describe, expect, it } from 'vitest'
 import { listStandingMerges } from '@/db/queries/merges'
+import { listKnownTruths } from '@/db/queries/told-truths'
 import type { DB } from '@/db/schema'
 import { Problem } from '@/lib/platform/problems/problem'
 import { giveGrades } from '@/lib/work/consensus/_give-grade'
@@ -136,6 +137,17 @@ describe('merging', () => {
       /no candidate/,
     )
     await expect(partCandidates(db, elsewhere, a, 'Two.')).rejects.toThrow(/no candidate/)
+    await db.destroy()
+  })
+
+  it('keeps both from becoming a calibration stamp afterwards', async () => {
+    const { db, lead, permit, campaign, a, b } = await closeScenario()
+    await mergeCandidates(db, await permit(lead, 'lead'), { kept: a, merged: [b], reason: 'One.' })
+    expect(await listKnownTruths(db, campaign.id, ['SWS A', 'SWS D'])).toMatchObject([{ judged: 1 }, { judged: 0 }])
+    for (const id of [a, b]) {
+      const told = db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', id).execute()
+      await expect(told).rejects.toThrow('a candidate that was merged is no calibration stamp')
+    }
     await db.destroy()
   })
 

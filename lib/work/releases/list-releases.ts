@@ -26,6 +26,8 @@ export interface ListedRelease {
   path: string
   /** How far its files are; null once they are all there. */
   making: { done: number; total: number; error: string | null; gaveUp: boolean } | null
+  /** Why a lead left it behind without them. */
+  givenUp: string | null
   notices: ReleaseNotice[]
   files: { name: string; bytes: number; sha256: string }[]
 }
@@ -39,7 +41,7 @@ export async function releaseList(db: Kysely<DB>, permit: CampaignPermit<'read'>
   }
   const releases = await listReleases(db, permit.campaign.id)
   const byId = new Map(releases.map((release) => [release.id, release]))
-  const jobs = releases.some(({ made }) => made === 0) ? await makingJobs(db, permit.campaign.id) : new Map()
+  const jobs = releases.some(isBeingMade) ? await makingJobs(db, permit.campaign.id) : new Map()
   return Promise.all(
     releases.map(async (release) => ({
       number: release.number,
@@ -52,15 +54,18 @@ export async function releaseList(db: Kysely<DB>, permit: CampaignPermit<'read'>
       candidates: release.candidates,
       access: release.access,
       path: releasePath(release.slug, release.number),
-      making: release.made === 1 ? null : (jobs.get(release.id) ?? { done: 0, total: 0, error: null, gaveUp: true }),
+      making: isBeingMade(release) ? (jobs.get(release.id) ?? { done: 0, total: 0, error: null, gaveUp: true }) : null,
+      givenUp: release.givenUpReason,
       notices: releases
-        .filter(({ corrects_id: of }) => of === release.id)
+        .filter(({ corrects_id: of, givenUpReason }) => of === release.id && givenUpReason === null)
         .toReversed()
         .flatMap(noticeOf),
       files: (await listReleaseFiles(db, release.id)).map(({ name, bytes, sha256 }) => ({ name, bytes, sha256 })),
     })),
   )
 }
+
+const isBeingMade = ({ made, givenUpReason }: ReleaseRow): boolean => made === 0 && givenUpReason === null
 
 function noticeOf({ number, kind, statement }: ReleaseRow): ReleaseNotice[] {
   return kind === 'release' ? [] : [{ number, kind, statement: statement ?? '' }]

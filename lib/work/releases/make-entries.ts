@@ -2,12 +2,11 @@ import 'server-only'
 import type { Insertable, Kysely } from 'kysely'
 import { findLastEntry, insertReleaseEntries, listStampsToRelease, listTakenKeys } from '@/db/queries/release-making'
 import type { DB } from '@/db/schema'
-import type { ReleasedLabel, ReleaseEntryTable } from '@/db/schema/releases'
+import type { ReleaseEntryTable } from '@/db/schema/releases'
 import { fromJson, toJson } from '@/db/schema/values'
 import { gradeClass } from '@/lib/work/catalogue/grade-class'
 import { standingRadii, type StandingRadius } from '@/lib/work/measuring/standing-radii'
 import { entryKey, freeKey } from './entry-key'
-import { knownLabelsOfRelease } from './known-labels-of-release'
 import { releasedCandidates, type Frozen, type ReleasedCandidate } from './read-frozen'
 
 /** Keeps a stamp for good, as a blob, and returns whether it could be had. */
@@ -15,7 +14,6 @@ export type KeepStamp = (candidateId: number, sha256: string) => Promise<void>
 
 interface Beside {
   radius: StandingRadius | undefined
-  labels: ReleasedLabel[]
   stamps: { view: string; sha256: string }[]
 }
 
@@ -38,9 +36,9 @@ export async function makeEntries(
     const ids = fresh.map((candidate) => candidate.candidate_id)
     const upTo = release.newest_measurement_id
     const radii = await standingRadii(db, release.campaign_id, ids, { upTo })
-    const labels = await knownLabelsOfRelease(db, ids)
+    const pictures = { campaignId: release.campaign_id, recipeHash: release.recipe_hash }
     const stamps = new Map<number, Beside['stamps']>()
-    for (const { candidateId, ...stamp } of await listStampsToRelease(db, release.campaign_id, ids)) {
+    for (const { candidateId, ...stamp } of await listStampsToRelease(db, pictures, ids)) {
       stamps.set(candidateId, [...(stamps.get(candidateId) ?? []), stamp])
       await keepStamp(candidateId, stamp.sha256)
     }
@@ -49,7 +47,7 @@ export async function makeEntries(
     const rows = fresh.map((candidate) => {
       rowNumber += 1
       const id = candidate.candidate_id
-      const beside = { radius: radii.get(id), labels: labels.get(id) ?? [], stamps: stamps.get(id) ?? [] }
+      const beside = { radius: radii.get(id), stamps: stamps.get(id) ?? [] }
       return {
         ...entryOf(candidate, beside),
         release_id: release.id,
@@ -65,7 +63,7 @@ export async function makeEntries(
 type EntryRow = Omit<Insertable<ReleaseEntryTable>, 'release_id' | 'row_number' | 'entry_key'>
 
 /** Remarks of everybody, but votes, mean, tags and class from what counts. */
-function entryOf(candidate: ReleasedCandidate, { radius, labels, stamps }: Beside): EntryRow {
+function entryOf(candidate: ReleasedCandidate, { radius, stamps }: Beside): EntryRow {
   const { verdict, answers, ruled } = candidate
   const votes = { A: 0, B: 0, C: 0, N: 0, U: 0 }
   const counted = answers.filter(({ notCounted }) => notCounted === null)
@@ -93,7 +91,7 @@ function entryOf(candidate: ReleasedCandidate, { radius, labels, stamps }: Besid
     reason: (ruled ? candidate.rulingReason : null) ?? candidate.verdictReason,
     remarks: remarks.map(({ by, remark }) => `${by}: ${remark}`).join('\n') || null,
     tags: countedTags(counted.flatMap(({ tags }) => fromJson(tags))),
-    known_as: toJson(labels),
+    known_as: candidate.known_as!,
     einstein_radius_arcsec: radius?.einsteinRadiusArcsec ?? null,
     einstein_radius_error_arcsec: radius?.errorArcsec ?? null,
     n_measured: radius?.count ?? 0,

@@ -34,7 +34,7 @@ type Progress = (done: number, total: number) => Promise<void>
 export async function makeRelease(tools: ReleaseTools, releaseId: number, progress: Progress): Promise<void> {
   const { db } = tools
   const release = await findReleaseById(db, releaseId)
-  if (!release || release.made === 1) return
+  if (!release || release.made === 1 || release.givenUpReason !== null) return
   const total = release.entries + RELEASE_FILES.length + 3
   const frozen = await readFrozen(db, release)
   await makeEntries(db, frozen, keepStamps(tools, release), (entries) => progress(entries, total))

@@ -45,9 +45,10 @@ export async function previewRelease(db: Kysely<DB>, permit: CampaignPermit<'lea
   const { campaign } = permit
   const releases = await listReleases(db, campaign.id)
   const number = (releases[0]?.number ?? 0) + 1
+  const standing = releases.filter(({ givenUpReason }) => givenUpReason === null)
   const before = await findReleaseBefore(db, campaign.id, number)
   const states = new Map((await countJudged(db, campaign.id)).map(({ state, count }) => [state, count]))
-  const withdrawn = new Set(releases.flatMap((one) => (one.kind === 'retraction' ? [one.corrects_id] : [])))
+  const withdrawn = new Set(standing.flatMap((one) => (one.kind === 'retraction' ? [one.corrects_id] : [])))
   const last = releases.find(({ kind }) => kind !== 'retraction')
   return {
     number,
@@ -61,8 +62,8 @@ export async function previewRelease(db: Kysely<DB>, permit: CampaignPermit<'lea
     ...(await listMovedSince(db, campaign.id, before?.id ?? null, LISTED)),
     stamps: await countCalibrationStamps(db, campaign.id),
     cautions: { visual: VISUAL_CAUTION, acronym: acronymCaution(campaign.acronym) },
-    beingMade: releases.find(({ made }) => made === 0)?.number ?? null,
-    correctable: releases
+    beingMade: standing.find(({ made }) => made === 0)?.number ?? null,
+    correctable: standing
       .filter(({ id, kind }) => kind !== 'retraction' && !withdrawn.has(id))
       .map(({ number: of, title }) => ({ number: of, title })),
     last: last ? pick(last) : null,

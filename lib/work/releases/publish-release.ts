@@ -21,6 +21,7 @@ import { conflict, invalid, Problem } from '@/lib/platform/problems/problem'
 import { cosmologyOf } from '@/lib/work/campaigns/cosmology-of'
 import { ruleOf } from '@/lib/work/campaigns/rule-in-force'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
+import { bringUpToDate, isUpToDate } from '@/lib/work/matching/bring-up-to-date'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { version } from '@/package.json'
 import { ReleaseInput, usualCitation, type ReleaseWanted } from './release-input'
@@ -35,9 +36,10 @@ export interface PublishedRelease {
 }
 
 /**
- * A lead freezes the campaign as a release with the next number. The consensus is run first, so that nothing of it is out of date.
+ * A lead freezes the campaign as a release with the next number. The consensus is run and what waits is matched first, so that nothing
+ * of it is out of date.
  * What is frozen is written in one short transaction; a job makes its files, and only then can it be opened to others.
- * @throws Problem 409 `release-being-made`, `no-position`, `nothing-confirmed`; 422 on a release to correct that is none. ZodError.
+ * @throws Problem 409 `release-being-made`, `being-matched`, `no-position`, `nothing-confirmed`; 422 on a release to correct that is none. ZodError.
  */
 export async function publishRelease(
   db: Kysely<DB>,
@@ -47,13 +49,17 @@ export async function publishRelease(
   const wanted = ReleaseInput.parse(input)
   for (let attempt = 1; attempt <= ATTEMPTS; attempt++) {
     await runConsensus(db, permit)
+    if (wanted.kind !== 'retraction') await bringUpToDate(db, permit.campaign.id)
     const published = await db.transaction().execute((transaction) => freeze(transaction, permit, wanted))
     if (published) return published
   }
-  throw conflict('runs-overlap', 'The rule or the consensus kept changing in between. Try again in a moment.')
+  throw conflict(
+    'runs-overlap',
+    'The rule, the consensus or positions kept changing in between. Try again in a moment.',
+  )
 }
 
-/** Null where a newer rule came between the run and this. */
+/** Null where a newer rule or another place of a candidate came in between. */
 async function freeze(
   db: Kysely<DB>,
   { campaign, viewer }: CampaignPermit<'lead'>,
@@ -65,6 +71,7 @@ async function freeze(
   const before = await listReleases(db, campaign.id)
   const corrected = findCorrected(before, wanted)
   await assertCanBePublished(db, campaign.id, before, wanted)
+  if (wanted.kind !== 'retraction' && !(await isUpToDate(db, campaign.id))) return null
   const states = wanted.kind === 'retraction' ? [] : await countJudged(db, campaign.id)
   const now = isoTime()
   const cosmology = cosmologyOf(campaign)
@@ -98,7 +105,6 @@ async function freeze(
     newest_ruling_id: newest.ruling,
     newest_merge_id: newest.merge,
     newest_measurement_id: newest.measurement,
-    newest_match_id: newest.match,
     candidates: states.reduce((sum, { count }) => sum + count, 0),
     entries: states.find(({ state }) => state === 'confirmed')?.count ?? 0,
     created_by: viewer.id,
@@ -118,12 +124,13 @@ async function freeze(
 
 function findCorrected(before: readonly ReleaseRow[], wanted: ReleaseWanted): ReleaseRow | null {
   if (wanted.kind === 'release') return null
-  const corrected = before.find(({ number }) => number === wanted.corrects)
+  const standing = before.filter(({ givenUpReason }) => givenUpReason === null)
+  const corrected = standing.find(({ number }) => number === wanted.corrects)
   if (!corrected || corrected.kind === 'retraction') {
     const reason = `There is no release ${wanted.corrects} here that could be corrected or withdrawn.`
     throw invalid(reason, [{ name: 'corrects', reason }])
   }
-  const withdrawn = before.find(({ kind, corrects_id: of }) => kind === 'retraction' && of === corrected.id)
+  const withdrawn = standing.find(({ kind, corrects_id: of }) => kind === 'retraction' && of === corrected.id)
   if (withdrawn) {
     const reason = `Release ${corrected.number} has been withdrawn already, by release ${withdrawn.number}.`
     throw invalid(reason, [{ name: 'corrects', reason }])
@@ -137,11 +144,11 @@ async function assertCanBePublished(
   before: readonly ReleaseRow[],
   { kind, emptyIsMeant }: ReleaseWanted,
 ): Promise<void> {
-  const unfinished = before.find(({ made }) => made === 0)
+  const unfinished = before.find(({ made, givenUpReason }) => made === 0 && givenUpReason === null)
   if (unfinished) {
     throw conflict(
       'release-being-made',
-      `The files of release ${unfinished.number} are still being made. Publish the next one when they are there.`,
+      `The files of release ${unfinished.number} are not all there. Publish the next one when they are, or give that one up if they cannot be made.`,
     )
   }
   if (kind === 'retraction') return

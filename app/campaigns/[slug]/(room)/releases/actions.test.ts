@@ -8,7 +8,7 @@ import {
   type ReleaseScenario,
 } from '@/lib/work/releases/_release-scenario'
 import { releaseList } from '@/lib/work/releases/list-releases'
-import { accessAction, makeAgainAction, publishAction } from './actions'
+import { accessAction, giveUpAction, makeAgainAction, publishAction } from './actions'
 
 let scenario: ReleaseScenario
 let viewer: Viewer | null
@@ -77,5 +77,25 @@ describe('accessAction and makeAgainAction', () => {
     expect((await accessAction(slug, 1, {}, formOf({ access: 'link' }))).message).toEqual(expect.any(String))
     expect((await makeAgainAction(slug, 1, {})).message).toEqual(expect.any(String))
     expect((await released())[0]).toMatchObject({ access: 'private' })
+  })
+})
+
+describe('giveUpAction', () => {
+  const giveUp = (reason = 'Its pictures are lost.') => giveUpAction(scenario.campaign.slug, 1, {}, formOf({ reason }))
+
+  it('leaves a release behind with the reason of a lead, and asks for one', async () => {
+    viewer = scenario.lead
+    await publish().catch(() => {})
+    expect((await giveUp(' ')).errors).toEqual({ reason: expect.stringContaining('Say why') })
+    expect(await giveUp()).toEqual({ done: 'Release 1 is given up.' })
+    expect(await released()).toMatchObject([{ number: 1, givenUp: 'Its pictures are lost.', making: null }])
+  })
+
+  it.each(OTHERS)('refuses %s in words and leaves it', async (_, who) => {
+    viewer = scenario.lead
+    await publish().catch(() => {})
+    viewer = who()
+    expect((await giveUp()).message).toEqual(expect.any(String))
+    expect(await released()).toMatchObject([{ number: 1, givenUp: null }])
   })
 })

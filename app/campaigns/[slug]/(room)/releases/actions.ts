@@ -6,6 +6,7 @@ import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
 import { config } from '@/lib/platform/config/config'
 import { changeAccess, type AccessInput } from '@/lib/work/releases/change-access'
+import { giveUpRelease, type GiveUpInput } from '@/lib/work/releases/give-up-release'
 import { makeAgain } from '@/lib/work/releases/make-again'
 import { publishRelease } from '@/lib/work/releases/publish-release'
 import { releaseAddress } from '@/lib/work/releases/release-address'
@@ -55,4 +56,21 @@ export async function makeAgainAction(slug: string, number: number, _before: For
   }
   revalidatePath(`/campaigns/${slug}/releases`)
   return { done: 'Its files are being made again; what is there is kept.' }
+}
+
+/** Leaves a release behind whose files cannot be made, so that the next one can be published. */
+export async function giveUpAction(
+  slug: string,
+  number: number,
+  _before: FormState,
+  form: FormData,
+): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await giveUpRelease(db, permit, number, Object.fromEntries(form) as GiveUpInput)
+  } catch (error) {
+    return failedForm(error, form)
+  }
+  revalidatePath(`/campaigns/${slug}/releases`)
+  return { done: `Release ${number} is given up.` }
 }

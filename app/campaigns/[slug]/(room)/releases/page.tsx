@@ -3,7 +3,7 @@ import { notFound } from 'next/navigation'
 import { permitPage } from '@/app/_lib/page-permit'
 import { ReleasesScreen } from '@/components/releases/releases-screen'
 import { releaseList } from '@/lib/work/releases/list-releases'
-import { accessAction, makeAgainAction } from './actions'
+import { accessAction, giveUpAction, makeAgainAction } from './actions'
 
 export const metadata: Metadata = { title: 'Releases' }
 
@@ -20,6 +20,7 @@ export default async function ReleasesPage({ params }: PageProps<'/campaigns/[sl
       releases={releases.map((release) => ({
         ...release,
         accessAction: accessAction.bind(null, slug, release.number),
+        giveUpAction: giveUpAction.bind(null, slug, release.number),
         againAction: makeAgainAction.bind(null, slug, release.number),
       }))}
       mayPublish={permit.role === 'lead'}
