@@ -152,7 +152,7 @@ describe('a merge on the pages of both', () => {
     await db.destroy()
   })
 
-  it('names the other to no grader who has not judged it, neither as a merge nor in the ruling', async () => {
+  it('names the other to no grader who has not judged it, nor while it is open, neither as a merge nor in the ruling', async () => {
     const { db, campaign, lead, permit, graders, a, b } = await closeScenario()
     const leads = await permit(lead, 'lead')
     const grader = await permit(graders[0], 'grade')
@@ -162,7 +162,9 @@ describe('a merge on the pages of both', () => {
     expect(JSON.stringify(page)).not.toContain('SWS A')
     expect(page.judgement?.stateReason).toContain('The same object as another candidate: merged into it.')
     expect(await candidateMatches(db, grader, b)).toMatchObject({ merges: [], histories: [] })
+    // Judged but open it looks as a calibration stamp does, and nothing merges with one.
     await giveGrades(db, campaign, a, graders, 'AAAA')
+    expect(JSON.stringify(await candidateEvidence(db, grader, b))).not.toContain('SWS A')
     await runConsensus(db, leads)
     expect(JSON.stringify(await candidateEvidence(db, grader, b))).toContain('SWS A shows the counter-image.')
     expect(await candidateMatches(db, grader, b)).toMatchObject({ merges: [{ other: { name: 'SWS A' } }] })

@@ -1,6 +1,6 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
-import { listRulingsOfMerges } from '@/db/queries/merges'
+import { listDecidedAmong, listRulingsOfMerges } from '@/db/queries/merges'
 import type { RulingWithName } from '@/db/queries/rulings'
 import type { DB } from '@/db/schema'
 import { revealedTo } from '@/lib/work/grading/may-reveal'
@@ -12,8 +12,8 @@ const SAYS = {
 }
 
 /**
- * Rulings as a grader may read them: the ruling of a merge names the candidate that was kept, and of one that they have not judged
- * they are told neither that nor what the lead wrote about the two.
+ * Rulings as a grader may read them: the ruling of a merge names the candidate that was kept. Where they have not judged that one, or
+ * it is open, they are told neither that nor what the lead wrote about the two: an open one that merges is no calibration stamp.
  */
 export async function withoutMergedNames(
   db: Kysely<DB>,
@@ -26,7 +26,8 @@ export async function withoutMergedNames(
   )
   if (merges.length === 0) return [...rulings]
   const revealed = await revealedTo(db, permit, [...new Set(merges.map(({ keptId }) => keptId))])
-  const hidden = new Map(merges.flatMap((merge) => (revealed.has(merge.keptId) ? [] : [[merge.rulingId, merge.event]])))
+  const told = new Set(await listDecidedAmong(db, permit.campaign.id, [...revealed]))
+  const hidden = new Map(merges.flatMap((merge) => (told.has(merge.keptId) ? [] : [[merge.rulingId, merge.event]])))
   return rulings.map((ruling) => {
     const event = hidden.get(ruling.id)
     return event === undefined ? ruling : { ...ruling, reason: SAYS[event] }
