@@ -1,23 +1,60 @@
-import type { CandidateBeside } from '@/db/queries/release-changes'
+import type { CandidateBeside, SaidOfCandidate } from '@/db/queries/release-changes'
 import type { Column } from '@/lib/science/formats/columns'
+import { labelsInWords } from './release-columns'
 
 /** One thing that a release says otherwise than the one before. */
 export interface Change {
   name: string
   designation: string | null
-  change: 'entered' | 'left' | 'state' | 'first judged' | 'not judged any more' | 'class' | 'name' | 'position'
+  change: 'entered' | 'left' | 'state' | 'first judged' | 'not judged any more' | keyof SaidOfCandidate
   before: string | null
   after: string | null
 }
 
-const place = (ra: number | null, dec: number | null) => (ra === null || dec === null ? null : `${ra} ${dec}`)
+/** Of what was decided, measured and known, the weightiest first. */
+const COMPARED: readonly (keyof SaidOfCandidate)[] = [
+  'class',
+  'name',
+  'designation',
+  'position',
+  'ruling',
+  'grades',
+  'mean',
+  'spread',
+  'probability',
+  'known objects',
+  'Einstein radius',
+  'error of the radius',
+  'measured by',
+  'lens redshift',
+  'source redshift',
+  'remarks',
+  'tags',
+  'pictures',
+]
+/** What an entry says in other words than a candidate that is none: compared where both are one, or neither. */
+const OF_ENTRIES: ReadonlySet<keyof SaidOfCandidate> = new Set([
+  'class',
+  'designation',
+  'grades',
+  'mean',
+  'spread',
+  'probability',
+  'known objects',
+  'Einstein radius',
+  'error of the radius',
+  'measured by',
+  'remarks',
+  'tags',
+  'pictures',
+])
 
 /** What has changed of one candidate, the weightiest first. */
-export function changesOf(row: CandidateBeside): Change[] {
-  const { name, designation, fromState, toState } = row
+export function changesOf({ fromState, toState, from, to }: CandidateBeside): Change[] {
+  const { name, designation } = { ...from, ...to } as SaidOfCandidate
   const changes: Change[] = []
   const add = (change: Change['change'], before: string | null, after: string | null) =>
-    changes.push({ name, designation, change, before, after })
+    changes.push({ name, designation: designation ?? from?.designation ?? null, change, before, after })
   if (fromState !== toState) {
     if (toState === 'confirmed') add('entered', fromState, toState)
     else if (fromState === 'confirmed') add('left', fromState, toState)
@@ -25,14 +62,19 @@ export function changesOf(row: CandidateBeside): Change[] {
     else if (toState === null) add('not judged any more', fromState, null)
     else add('state', fromState, toState)
   }
-  if (fromState === null || toState === null) return changes
-  if (fromState === 'confirmed' && toState === 'confirmed' && row.fromClass !== row.toClass) {
-    add('class', row.fromClass, row.toClass)
+  if (from === null || to === null) return changes
+  const isAlike = (fromState === 'confirmed') === (toState === 'confirmed')
+  for (const what of COMPARED) {
+    const isSame = JSON.stringify(from[what]) === JSON.stringify(to[what])
+    if (!isSame && (isAlike || !OF_ENTRIES.has(what))) add(what, inText(what, from), inText(what, to))
   }
-  if (row.fromName !== name) add('name', row.fromName, name)
-  const [from, to] = [place(row.fromRaDeg, row.fromDecDeg), place(row.toRaDeg, row.toDecDeg)]
-  if (from !== to) add('position', from, to)
   return changes
+}
+
+function inText(what: keyof SaidOfCandidate, said: SaidOfCandidate): string | null {
+  if (what === 'known objects') return said[what] && labelsInWords({ known_as: said[what] })
+  if (what === 'position') return said[what].includes(null) ? null : said[what].join(' ')
+  return said[what] === null ? null : String(said[what])
 }
 
 /** `changes.csv` */
@@ -52,7 +94,22 @@ const SAID: Record<Change['change'], (count: string) => string> = {
   'first judged': (count) => `${count} judged for the first time and not in the catalogue`,
   'not judged any more': (count) => `${count} no longer judged`,
   name: (count) => `${count} renamed`,
+  designation: (count) => `${count} with another designation`,
   position: (count) => `${count} with another position`,
+  ruling: (count) => `${count} ruled on otherwise`,
+  grades: (count) => `${count} with other grades`,
+  mean: (count) => `${count} with another mean`,
+  spread: (count) => `${count} with another spread`,
+  probability: (count) => `${count} with another probability`,
+  'known objects': (count) => `${count} with other known objects`,
+  'Einstein radius': (count) => `${count} with another Einstein radius`,
+  'error of the radius': (count) => `${count} with another error of it`,
+  'measured by': (count) => `${count} measured by more or fewer people`,
+  'lens redshift': (count) => `${count} with another lens redshift`,
+  'source redshift': (count) => `${count} with another source redshift`,
+  remarks: (count) => `${count} with other remarks`,
+  tags: (count) => `${count} with other tags`,
+  pictures: (count) => `${count} with other pictures`,
 }
 
 /** In words, by how many of each. */

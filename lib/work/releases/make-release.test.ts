@@ -134,12 +134,16 @@ it('is as of the freeze: what is graded, ruled or renamed afterwards is in the n
       'renamed,SWS J235959.97-000000.0,class,A,B',
       'renamed,SWS J235959.97-000000.0,name,one,renamed',
       'renamed,SWS J235959.97-000000.0,position,359.9999 -0.00001,359.9999 80',
+      'renamed,SWS J235959.97-000000.0,grades,"A 3, B 1, C 0, N 0, 0 cannot judge","A 2, B 1, C 1, N 0, 0 cannot judge"',
+      'renamed,SWS J235959.97-000000.0,mean,2.75,2.25',
+      'renamed,SWS J235959.97-000000.0,spread,0.4330127018922193,0.82915619758885',
       'two,SWS J100024.00+021200.0,entered,set aside,confirmed',
+      'two,SWS J100024.00+021200.0,ruling,,confirmed A: Seen in the new image.',
       '',
     ].join('\r\n'),
   )
   expect(await readText(scenario, files, 'README.txt')).toContain(
-    'Against release 1: 1 entered the catalogue; 1 changed class; 1 renamed; 1 with another position.',
+    'Against release 1: 1 entered the catalogue; 1 changed class; 1 renamed; 1 with another position; 1 ruled on otherwise;',
   )
 })
 
