@@ -20,9 +20,13 @@ export function ReleaseNotices({ head, links }: { head: ReleaseHead; links: Rele
           <strong>
             {notice.kind === 'retraction' ? 'This release is withdrawn.' : 'This release has an erratum.'}
           </strong>{' '}
-          <a href={links.other(notice.number)} className={link}>
-            Release {notice.number}
-          </a>{' '}
+          {notice.isOpen ? (
+            <a href={links.other(notice.number)} className={link}>
+              Release {notice.number}
+            </a>
+          ) : (
+            `Release ${notice.number}, which is not open yet,`
+          )}{' '}
           says why: {notice.statement}
         </Said>
       ))}

@@ -74,7 +74,7 @@ export function PublishForm({ home, campaign, survey, year, licences, preview, k
                 rows={3}
                 defaultValue={values.statement}
                 error={errors.statement}
-                hint="Stands on its page and beside its files from the moment this one is opened."
+                hint="Stands on the page of that release for everybody who may read it, as soon as the files of this one are there."
               />
             </>
           )}

@@ -68,7 +68,7 @@ export async function releaseList(db: Kysely<DB>, permit: CampaignPermit<'read'>
 const isBeingMade = ({ made, givenUpReason }: ReleaseRow): boolean => made === 0 && givenUpReason === null
 
 function noticeOf({ number, kind, statement }: ReleaseRow): ReleaseNotice[] {
-  return kind === 'release' ? [] : [{ number, kind, statement: statement ?? '' }]
+  return kind === 'release' ? [] : [{ number, kind, statement: statement ?? '', isOpen: true }]
 }
 
 type Making = NonNullable<ListedRelease['making']>

@@ -11,13 +11,13 @@ export const NEWEST = 'newest'
 export interface PublicReleases {
   /** Newest first. */
   releases: PublicRelease[]
-  /** The newest that has a catalogue and has not been withdrawn in public; null where none is left. */
+  /** The newest that has a catalogue and has not been withdrawn; null where none is left. */
   standing: ReleaseRow | null
 }
 
 export interface PublicRelease {
   release: ReleaseRow
-  /** Numbers of the public errata and retractions of it. */
+  /** Numbers of the errata and the retraction of it, opened or not. */
   correctedBy: number[]
   retractedBy: number | null
 }
@@ -40,7 +40,7 @@ async function withFates(db: Kysely<DB>, rows: readonly ReleaseRow[]): Promise<P
   const releases: PublicRelease[] = []
   // By number, since a clock can be set back.
   for (const release of rows.toSorted((a, b) => b.number - a.number)) {
-    const notices = (await listNoticesOf(db, release.id)).filter((one) => one.access === 'public' && one.made === 1)
+    const notices = (await listNoticesOf(db, release.id)).filter(({ made }) => made === 1)
     releases.push({
       release,
       correctedBy: notices.filter(({ kind }) => kind === 'erratum').map(({ number }) => number),

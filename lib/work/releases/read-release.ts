@@ -38,14 +38,20 @@ export interface ReleaseNotice {
   number: number
   kind: 'erratum' | 'retraction'
   statement: string
+  /** Whether this reader may read that release too. */
+  isOpen: boolean
 }
 
-/** What corrects or withdraws a release, as far as this reader may read that, oldest first. */
+/**
+ * What corrects or withdraws a release, oldest first, from the moment its files are there: whoever reads the old one is told, also
+ * where nobody has opened the new one.
+ */
 export async function noticesOf(db: Kysely<DB>, release: ReleaseRow, reader: Reader): Promise<ReleaseNotice[]> {
   const notices: ReleaseNotice[] = []
   for (const later of await listNoticesOf(db, release.id)) {
-    if (later.kind === 'release' || later.made === 0 || !(await mayRead(db, later, reader))) continue
-    notices.push({ number: later.number, kind: later.kind, statement: later.statement ?? '' })
+    if (later.kind === 'release' || later.made === 0) continue
+    const isOpen = await mayRead(db, later, reader)
+    notices.push({ number: later.number, kind: later.kind, statement: later.statement ?? '', isOpen })
   }
   return notices
 }

@@ -4,6 +4,8 @@ import type { Viewer } from '@/lib/work/people/viewer'
 import { addGraded, makeReleaseScenario, publishAndMake, RELEASE, type ReleaseScenario } from './_release-scenario'
 import { changeAccess, type AccessInput } from './change-access'
 import { releaseList } from './list-releases'
+import { makeRelease } from './make-release'
+import { publicReleases } from './newest-standing'
 import { publishRelease } from './publish-release'
 import { noticesOf, openReleaseFile, releaseToRead } from './read-release'
 
@@ -83,20 +85,42 @@ it('refuses an access that is none, and a release that is none', async () => {
   await expect(open(2, { access: 'private' })).rejects.toMatchObject({ status: 404 })
 })
 
-it('tells of an erratum only those who may read it, and of a retraction too', async () => {
+it('tells whoever reads a release of its errata and its retraction, opened or not, once their files are there', async () => {
   await publishAndMake(scenario)
-  await publishAndMake(scenario, { kind: 'erratum', corrects: 1, statement: 'Positions were off.' })
   await open(1, { access: 'public', acronymRegistered: true })
+  const permit = await scenario.permit(scenario.lead, 'lead')
   const release = (await findRelease(scenario.db, scenario.campaign.id, 1))!
   const anybody = { viewer: null, token: null }
+  const erratum = { ...RELEASE, kind: 'erratum' as const, corrects: 1, statement: 'Positions were off.' }
+  const { id } = await publishRelease(scenario.db, permit, erratum)
   expect(await noticesOf(scenario.db, release, anybody)).toEqual([])
+  await makeRelease(scenario.tools, id, async () => {})
+  const told = { number: 2, kind: 'erratum', statement: 'Positions were off.' }
+  expect(await noticesOf(scenario.db, release, anybody)).toEqual([{ ...told, isOpen: false }])
+  const reader = { viewer: scenario.reader, token: null }
+  expect(await noticesOf(scenario.db, release, reader)).toEqual([{ ...told, isOpen: true }])
   await open(2, { access: 'public', acronymRegistered: true })
-  expect(await noticesOf(scenario.db, release, anybody)).toEqual([
-    { number: 2, kind: 'erratum', statement: 'Positions were off.' },
-  ])
+  expect(await noticesOf(scenario.db, release, anybody)).toEqual([{ ...told, isOpen: true }])
   await publishAndMake(scenario, { kind: 'retraction', corrects: 1, statement: 'Wrong field.' })
-  await open(3, { access: 'public' })
-  expect((await noticesOf(scenario.db, release, anybody)).map(({ number }) => number)).toEqual([2, 3])
+  expect((await noticesOf(scenario.db, release, anybody)).map(({ number, isOpen }) => [number, isOpen])).toEqual([
+    [2, true],
+    [3, false],
+  ])
+})
+
+it('passes over what was withdrawn, though the retraction is private, where the newest that stands is asked for', async () => {
+  await publishAndMake(scenario)
+  await publishAndMake(scenario)
+  await open(1, { access: 'public', acronymRegistered: true })
+  await open(2, { access: 'public', acronymRegistered: true })
+  expect((await publicReleases(scenario.db, scenario.campaign.slug)).standing?.number).toBe(2)
+  await publishAndMake(scenario, { kind: 'retraction', corrects: 2, statement: 'Wrong field.' })
+  const { releases, standing } = await publicReleases(scenario.db, scenario.campaign.slug)
+  expect(standing?.number).toBe(1)
+  expect(releases.map(({ release, retractedBy }) => [release.number, retractedBy])).toEqual([
+    [2, 3],
+    [1, null],
+  ])
 })
 
 it('serves the bytes that its hash names, and no file that it does not have', async () => {
