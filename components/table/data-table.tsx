@@ -104,7 +104,7 @@ export function DataTable<Row extends RowData>(props: DataTableProps<Row>) {
   return (
     <div className="flex min-h-0 flex-1 flex-col gap-2">
       <div className="flex flex-wrap items-center gap-x-3 gap-y-2 max-md:[&_button]:min-h-11">
-        <p role="status" className="mr-auto text-small text-mute first-letter:uppercase">
+        <p role="status" className="mr-auto text-small text-mute first-letter:uppercase max-md:w-full">
           {filterCount > 0 && !isPending ? `${found}, ` : ''}
           {describeOrder(columns, state.sort)}
           {isPending ? ' · reading…' : ''}

@@ -4,7 +4,7 @@ import type { SkyPosition } from '@/lib/science/sky/separation'
 import { FilterField, TypedField } from './filter-field'
 import { RegionPlot } from './region-plot'
 import { readRegion, type RegionField } from './sky-region'
-import type { ColumnFilterKind, TableColumn } from './table-column'
+import type { TableColumn } from './table-column'
 import { ToolButton } from './tool-button'
 
 interface FilterPanelProps<Row> {
@@ -29,7 +29,7 @@ export function FilterPanel<Row>({ columns, filters, onChange, positions, found,
     >
       <div className="grid flex-1 grid-cols-2 content-start gap-x-3 gap-y-2.5 md:grid-cols-[repeat(auto-fill,minmax(8.25rem,1fr))]">
         {fields.map((column) => (
-          <div key={column.id} className={widthOf(column.filter)}>
+          <div key={column.id} className={widthOf(column)}>
             <FilterField column={column} value={filters[column.id] ?? ''} onChange={onChange} />
           </div>
         ))}
@@ -44,8 +44,9 @@ export function FilterPanel<Row>({ columns, filters, onChange, positions, found,
   )
 }
 
-/** Choices stand in one line where there is room. */
-function widthOf(filter: ColumnFilterKind | undefined): string {
+/** Choices stand in one line where there is room, names in one line of their own on a phone. */
+function widthOf<Row>({ filter, pinned }: TableColumn<Row>): string {
+  if (pinned) return 'max-md:col-span-2'
   const letters = typeof filter === 'object' ? filter.join('').length + 2 * filter.length : 0
   if (letters > 45) return 'col-span-2 md:col-span-3'
   return letters > 20 ? 'col-span-2' : ''
