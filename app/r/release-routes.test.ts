@@ -173,6 +173,15 @@ describe('a file of a release', () => {
     expect(response.headers.get('access-control-allow-origin')).toBe('*')
   })
 
+  it('is saved under the name that SHA256SUMS has for it, and an archive under the name of its release', async () => {
+    const saved = async (name: string) => (await askFile('2', name)).headers.get('content-disposition')
+    const listed = (await (await askFile('2', 'SHA256SUMS')).text()).trim().split('\n')
+    for (const name of listed.map((line) => line.slice(66)))
+      expect(await saved(name)).toBe(`attachment; filename="${name}"`)
+    expect(await saved('RELEASE.zip')).toBe('attachment; filename="north-field-release-2-RELEASE.zip"')
+    expect(await saved('stamps.zip')).toBe('attachment; filename="north-field-release-2-stamps.zip"')
+  })
+
   it('is not open to pages of other sites where a session or a secret opened it', async () => {
     const byLink = await askFile('3', 'catalogue.csv', `key=${token}`)
     expect(byLink.status).toBe(200)

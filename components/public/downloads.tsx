@@ -22,8 +22,9 @@ export function Downloads({ files, links }: { files: ReleaseContents['files']; l
         </details>
       ) : null}
       <p className="text-note text-mute">
-        The code under each name is its SHA-256: <code className="figures">sha256sum -c SHA256SUMS</code> checks them
-        all. Files never change.
+        The code under each name is its SHA-256. <code className="figures">sha256sum -c SHA256SUMS</code>, with the
+        files beside it under their names here, checks all but the two archives: RELEASE.zip holds SHA256SUMS, and
+        README.txt has the SHA-256 of stamps.zip. Files never change.
       </p>
     </section>
   )

@@ -191,7 +191,7 @@ function Row({
       <td className="figures px-3 py-1.5 text-right max-sm:hidden">{worth ?? '–'}</td>
       {hasRadii ? (
         <td className="figures px-3 py-1.5 text-right max-lg:hidden">
-          {row.einsteinRadiusArcsec === null ? '–' : `${row.einsteinRadiusArcsec.toFixed(2)}″`}
+          {row.einsteinRadiusArcsec === null ? '–' : radiusInWords(row)}
         </td>
       ) : null}
       <td className="px-3 py-1.5 max-sm:hidden">
@@ -205,6 +205,9 @@ function Row({
     </tr>
   )
 }
+
+const radiusInWords = ({ einsteinRadiusArcsec: radius, einsteinRadiusErrorArcsec: error }: EntryRow): string =>
+  `${(radius ?? 0).toFixed(2)}${error === null ? '' : ` ± ${error.toFixed(2)}`}″`
 
 /** Links to the other pages, each with its place in words. */
 export function TablePages({ table, query, links }: { table: ReleaseTable; query: TableQuery; links: ReleaseLinks }) {

@@ -18,7 +18,7 @@ export interface ReleaseLinks {
   key: string | null
 }
 
-export function releaseLinks(slug: string, number: number, key: string | null): ReleaseLinks {
+export function releaseLinks(slug: string, number: number, key: string | null, isPublic = key === null): ReleaseLinks {
   const base = releasePath(slug, number)
   const address = (path: string, parameters = new URLSearchParams()) => {
     const query = new URLSearchParams(parameters)
@@ -27,7 +27,8 @@ export function releaseLinks(slug: string, number: number, key: string | null): 
     return text === '' ? path : `${path}?${text}`
   }
   return {
-    all: `/r/${slug}`,
+    // A campaign without a public release has no such page, so that who reads one that is not public stays at it.
+    all: isPublic ? `/r/${slug}` : address(base),
     page: (parameters) => address(base, parameters),
     entry: (entryKey) => address(`${base}/${encodeURIComponent(entryKey)}`),
     entryJson: (entryKey) => address(`${base}/${encodeURIComponent(entryKey)}/entry.json`),

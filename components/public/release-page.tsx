@@ -1,4 +1,5 @@
 import { counted, day } from '@/components/campaigns/in-words'
+import { GRADE_CLASS_RULE, GRADE_MEANINGS } from '@/lib/work/catalogue/grade-class'
 import type { ReleaseContents, ReleaseHead, ReleaseTable } from '@/lib/work/releases/read-release-page'
 import type { ReleaseSky } from '@/lib/work/releases/release-sky'
 import type { TableQuery } from '@/lib/work/releases/table-query'
@@ -48,6 +49,9 @@ export function ReleasePage({ head, contents, sky, table, query, links, addresse
           </div>
           <Counts head={head} classes={contents.classes} />
           <p className="max-w-2xl text-small text-mute">{head.rule}</p>
+          <p className="max-w-2xl text-small text-mute">
+            Class: {GRADE_CLASS_RULE}. {GRADE_MEANINGS}
+          </p>
         </div>
         <SkySection sky={sky} links={links} />
       </div>
@@ -68,6 +72,9 @@ export function ReleasePage({ head, contents, sky, table, query, links, addresse
               {problem}
             </p>
           ))}
+          {query.order === 'catalogue' ? (
+            <p className="text-note text-mute">In the order in which the campaign took them in, as in the files.</p>
+          ) : null}
           <EntriesTable table={table} query={query} links={links} byReliability={head.method === 'reliability'} />
           <TablePages table={table} query={query} links={links} />
         </section>

@@ -2,6 +2,7 @@ import { SkyMap, skyInWords, type SkyMarks } from '@/components/sky/sky-map'
 import type { ReleaseSky } from '@/lib/work/releases/release-sky'
 import type { ReleaseLinks } from './release-links'
 
+const CLASS_WORDS = { A: 'A sure', B: 'B probable', C: 'C possible' }
 const CELLS_LISTED = 30
 
 /** The map of a release with what it says in words, and where it shows densities their numbers. */
@@ -30,7 +31,7 @@ export function SkySection({ sky, links }: { sky: ReleaseSky; links: ReleaseLink
                 <svg width="10" height="10" aria-hidden="true">
                   <circle cx="5" cy="5" r="4" fill={`var(--grade-${one.toLowerCase()})`} stroke="var(--text)" />
                 </svg>
-                {one}
+                {CLASS_WORDS[one]}
               </span>
             ))}
             <span>Equal-area map; each dot leads to its entry.</span>

@@ -32,9 +32,11 @@ export async function countJudged(
 }
 
 /** What the lists in force know `candidate` as, nearest first, without what a lead has told to differ. */
-const knownAs = sql`(select json_group_array(json_object('list', list, 'name', name, 'separationArcsec', separation)
+const knownAs = sql`(select json_group_array(json_object('list', list, 'name', name, 'separationArcsec', separation,
+      'keptOutOfNew', json(kept_out))
     order by separation, list_id, row_number)
-  from (select l.name as list, o.name, m.separation_arcsec as separation, m.list_id, m.row_number
+  from (select l.name as list, o.name, m.separation_arcsec as separation,
+      iif(l.keeps_out_of_new = 1, 'true', 'false') as kept_out, m.list_id, m.row_number
     from object_match m join reference_list l on l.id = m.list_id and l.state = 'ready'
       join reference_object o on o.list_id = m.list_id and o.row_number = m.row_number
     where m.candidate_id = candidate.id and ${standingMatch}))`

@@ -29,11 +29,15 @@ export type EntryOrder = keyof typeof ORDERS
 
 type Query = SelectQueryBuilder<DB, 'release_entry', object>
 
+/** As the column `new` of a release: no list that is kept out of new lists knows it. */
+const isNew = sql<boolean>`not exists
+  (select 1 from json_each(known_as) label where label.value ->> 'keptOutOfNew' is not 0)`
+
 function narrowed(db: Kysely<DB>, releaseId: number, { text, classes, known, ids }: EntryConditions): Query {
   let query: Query = db.selectFrom('release_entry').where('release_id', '=', releaseId)
   if (ids) query = query.where('id', 'in', among(ids))
   if (classes) query = query.where(sql<string>`coalesce(class, 'none')`, 'in', classes)
-  if (known !== undefined) query = query.where(known ? sql<boolean>`known_as <> '[]'` : sql<boolean>`known_as = '[]'`)
+  if (known !== undefined) query = query.where(known ? sql<boolean>`known_as <> '[]'` : isNew)
   if (text) {
     const like = `%${text.replace(/[\\%_]/g, '\\$&')}%`
     query = query.where(

@@ -16,6 +16,8 @@ export interface ReleasedLabel {
   list: string
   name: string
   separationArcsec: number
+  /** Whether the list kept what it knows out of new lists when the release was frozen. */
+  keptOutOfNew: boolean
 }
 
 export interface ReleaseTable {

@@ -34,7 +34,12 @@ export async function openRelease(slug: string, number: string, asked: Asked, re
   const { release, head } = await orNotFound(
     readReleaseHead(db, slug, number, { viewer: await getViewer(), token: key }),
   )
-  const links: ReleaseLinks = releaseLinks(release.slug, release.number, release.access === 'link' ? key : null)
+  const links: ReleaseLinks = releaseLinks(
+    release.slug,
+    release.number,
+    release.access === 'link' ? key : null,
+    release.access === 'public',
+  )
   return { db, release, head, links }
 }
 

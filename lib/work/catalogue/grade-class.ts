@@ -14,6 +14,9 @@ export const GRADE_CLASS_RULE =
   `the grade that a lead ruled, else by the mean of the grade points: ` +
   `A from ${LEAST_MEAN_OF_CLASS.A}, B from ${LEAST_MEAN_OF_CLASS.B}, C below`
 
+/** What the letters say, for pages and files. */
+export const GRADE_MEANINGS = 'A sure, B probable, C possible, N not a lens.'
+
 /**
  * @param mean grade points, 0 to 3; null when nobody gave a grade.
  * @returns null when there is neither a ruled grade nor a mean.

@@ -2,6 +2,7 @@ import 'server-only'
 import type { Kysely } from 'kysely'
 import { listLeftOutPeople, listPseudonyms } from '@/db/queries/consensus'
 import { countCalibration, listFrozen, listReleasedGrades, type FrozenCandidate } from '@/db/queries/release-making'
+import { listFrozenMerges } from '@/db/queries/release-beside'
 import type { ReleaseRow } from '@/db/queries/releases'
 import type { DB } from '@/db/schema'
 import { fromJson, type Json } from '@/db/schema/values'
@@ -43,6 +44,8 @@ export interface ReleasedCandidate extends FrozenCandidate {
   answers: ReleasedAnswer[]
   /** The newest ruling where it decides. */
   ruled: boolean
+  /** Name of the candidate that it is the same object as. */
+  mergedInto: string | null
 }
 
 export const releaseBounds = (release: ReleaseRow) => ({
@@ -147,6 +150,12 @@ export async function* releasedCandidates(
     const range = { from: page[0].candidate_id, to: page[page.length - 1].candidate_id }
     const marks = { campaignId: release.campaign_id, newestSheetMarkId: release.newest_sheet_mark_id }
     const notSentOn = await readNotSentOn(db, marks, range)
+    const merges = { campaignId: release.campaign_id, upTo: release.newest_merge_id }
+    const mergedInto = await listFrozenMerges(
+      db,
+      merges,
+      page.map((row) => row.candidate_id),
+    )
     yield page.map((candidate) => {
       const reasonOfPass = notSentOn.get(candidate.candidate_id)
       const plain = judged.judge(row++)
@@ -160,7 +169,15 @@ export async function* releasedCandidates(
           `${candidate.name} was frozen as '${candidate.state}', and its grades and rulings come to '${expected}'.`,
         )
       }
-      return { ...candidate, verdict: judgement, verdictReason: reason(), notSentOn: passedOver, ruled }
+      const kept = mergedInto.get(candidate.candidate_id) ?? null
+      return {
+        ...candidate,
+        verdict: judgement,
+        verdictReason: reason(),
+        notSentOn: passedOver,
+        ruled,
+        mergedInto: kept,
+      }
     })
   }
 }

@@ -2,6 +2,7 @@ import type { ReleaseRow } from '@/db/queries/releases'
 import { fromJson } from '@/db/schema/values'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { ruleInWords } from '@/lib/work/catalogue/rule-in-words'
+import { GRADE_CLASS_RULE, GRADE_MEANINGS } from '@/lib/work/catalogue/grade-class'
 import { cautionsOf } from './cautions'
 import { licenceInWords } from './licences'
 import { RELEASE_FILES } from './release-files'
@@ -40,7 +41,8 @@ export function readmeText(
     more.changes,
     '',
     `Verdicts: ${ruleInWords(rule)}`,
-    `Cosmology: ${cosmology.model}, H0 = ${cosmology.hubbleConstant} km/s/Mpc, Omega_m = ${cosmology.omegaMatter}, flat.`,
+    `Class of an entry: ${GRADE_CLASS_RULE}. ${GRADE_MEANINGS}`,
+    `Cosmology of masses and delays in measurements.csv: ${cosmology.model === 'flat LCDM' ? 'flat LCDM' : `${cosmology.model} (flat LCDM)`}, H0 = ${cosmology.hubbleConstant} km/s/Mpc, Omega_m = ${cosmology.omegaMatter}; a measurement that was made in another one says so.`,
     ...(release.recipe_hash ? [`Pictures were made by the recipe with the SHA-256 ${release.recipe_hash}.`] : []),
     '',
     'AUTHORS',
@@ -54,7 +56,7 @@ export function readmeText(
     '',
     'FILES',
     ...RELEASE_FILES.map(({ name, about }) => `${name}\n    ${about}`),
-    'SHA256SUMS\n    SHA-256 of each of these files; check with: sha256sum -c SHA256SUMS',
+    'SHA256SUMS\n    SHA-256 of each of these files; check with: sha256sum -c SHA256SUMS, beside them. RELEASE.zip holds it and so is not in it;\n    the page of the release has the SHA-256 of RELEASE.zip',
     `stamps.zip, beside this archive\n    the pictures of the entries, by designation. SHA-256 ${more.stampsSha256}`,
     '',
     'Text is exact in every format, also where it begins with =, +, - or @: do not open the files in a spreadsheet that runs formulas.',

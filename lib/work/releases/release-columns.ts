@@ -16,6 +16,10 @@ export const labelsInWords = (entry: Pick<ReleaseEntry, 'known_as'>): string | n
     .map(({ name, list, separationArcsec }) => `${name} (${list}, ${separationArcsec.toFixed(2)} arcsec)`)
     .join('; ') || null
 
+/** No reference list whose objects are kept out of new lists knows it. */
+export const isNew = (entry: Pick<ReleaseEntry, 'known_as'>): boolean =>
+  fromJson(entry.known_as).every(({ keptOutOfNew }) => keptOutOfNew === false)
+
 /** The columns of a released catalogue in every format and in its cone search. Names are kept stable. */
 export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
   {
@@ -54,6 +58,14 @@ export const RELEASE_COLUMNS: readonly Column<ReleaseEntry>[] = [
   same('remarks', (entry) => entry.remarks),
   same('tags', (entry) => entry.tags),
   same('known_as', labelsInWords),
+  {
+    name: 'new',
+    datatype: 'char',
+    ucd: 'meta.code',
+    description:
+      'yes or no: no where a reference list that is kept out of new lists has the object; a list that is not so kept makes it known only',
+    value: (entry) => (isNew(entry) ? 'yes' : 'no'),
+  },
   same('einstein_radius', (entry) => entry.einstein_radius_arcsec),
   same('einstein_radius_error', (entry) => entry.einstein_radius_error_arcsec),
   same('n_measured', (entry) => entry.n_measured),

@@ -2,9 +2,9 @@ import { ARCHIVE } from '@/db/queries/releases'
 import { CHECKSUMS, RELEASE_FILES, STAMPS } from './release-files'
 
 const OTHERS: Record<string, string> = {
-  [ARCHIVE]: 'everything below in one archive; npm run reproduce recomputes its verdicts',
-  [STAMPS.name]: 'the pictures, named by their SHA-256',
-  [CHECKSUMS.name]: 'SHA-256 of every file, for sha256sum -c',
+  [ARCHIVE]: 'every file but stamps.zip in one archive; npm run reproduce recomputes its verdicts',
+  [STAMPS.name]: 'the pictures of the entries, a folder each by designation; README.txt has its SHA-256',
+  [CHECKSUMS.name]: 'SHA-256 of every file of the archive, for sha256sum -c',
 }
 
 /** What a file of a release is, in a few words; empty for one that is not known. */

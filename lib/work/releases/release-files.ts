@@ -21,6 +21,11 @@ export const RELEASE_FILES = [
   { name: 'candidates.csv', mediaType: CSV, about: 'every judged candidate with its verdict and ruling' },
   { name: 'grades.csv', mediaType: CSV, about: 'every grade of these candidates, and whether it counts' },
   { name: 'graders.csv', mediaType: CSV, about: 'every grader: reliability, and grades of calibration stamps' },
+  {
+    name: 'measurements.csv',
+    mediaType: CSV,
+    about: 'what people measured on the entries: method, Einstein radius, redshifts, mass, lens models',
+  },
   { name: 'other-columns.csv', mediaType: CSV, about: 'unit and description of each column of the other tables' },
   { name: 'rule.json', mediaType: JSON_TYPE, about: 'the rule, the cosmology, the method and its constants' },
   { name: 'changes.csv', mediaType: CSV, about: 'what is otherwise than in the release before' },
@@ -30,4 +35,11 @@ export type ReleaseFileName = (typeof RELEASE_FILES)[number]['name']
 
 export const CHECKSUMS = { name: 'SHA256SUMS', mediaType: TEXT } as const
 export const STAMPS = { name: 'stamps.zip', mediaType: 'application/zip' } as const
+/**
+ * What a browser saves a file as. Those that SHA256SUMS lists keep their names, so that it finds them; archives, which it does not
+ * list, say whose they are.
+ */
+export const savedName = ({ slug, number }: { slug: string; number: number }, name: string): string =>
+  name.endsWith('.zip') ? `${slug}-release-${number}-${name}` : name
+
 export const ARCHIVE_TYPE = 'application/zip'

@@ -37,7 +37,7 @@ const entryOf = (words: string, raDeg: number, decDeg: number): ReleaseEntry => 
   reason: words,
   remarks: words,
   tags: words,
-  known_as: toJson([{ list: words, name: words, separationArcsec: 0.25 }]),
+  known_as: toJson([{ list: words, name: words, separationArcsec: 0.25, keptOutOfNew: true }]),
   einstein_radius_arcsec: 1.2,
   einstein_radius_error_arcsec: null,
   n_measured: 1,

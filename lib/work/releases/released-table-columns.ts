@@ -50,6 +50,12 @@ export const CANDIDATE_COLUMNS: readonly Column<ReleasedCandidate>[] = [
   text(['ruling_grade', 'Grade that the ruling names', (row) => (row.ruled ? row.rulingGrade : null)]),
   text(['ruling_reason', 'Reason of the ruling', (row) => (row.ruled ? row.rulingReason : null)]),
   text(['ruled_by', 'Pseudonym of the lead who ruled', (row) => (row.ruled ? row.ruledBy : null)]),
+  text([
+    'merged_into',
+    'Name of the candidate that a lead has told to be the same object and that this one was merged into; that one has a row here ' +
+      'only where it is judged',
+    (row) => row.mergedInto,
+  ]),
   text(['basis', `What the row rests on. ${VISUAL_CAUTION}`, () => 'visual grade, not a spectroscopic confirmation']),
 ]
 

@@ -16,10 +16,12 @@ import { cautionsOf } from './cautions'
 import { CHANGE_COLUMNS, changesOf, type Change } from './changes'
 import { citationCff, citationText, dataciteJson } from './citation-files'
 import { licenceInWords } from './licences'
+import { MEASUREMENT_COLUMNS } from './measurement-columns'
 import { PAGE, releasedCandidates, type Frozen } from './read-frozen'
 import { readmeText } from './readme'
 import { RELEASE_COLUMNS } from './release-columns'
 import { RELEASE_FILES, type ReleaseFileName } from './release-files'
+import { releasedMeasurements } from './released-measurements'
 import {
   CANDIDATE_COLUMNS,
   GRADE_COLUMNS,
@@ -89,11 +91,14 @@ export function textOf(db: Kysely<DB>, name: ReleaseFileName, about: Surrounding
           return { ...grader, rates: grader.leftOut ? null : rates }
         }),
       )
+    case 'measurements.csv':
+      return csvDocument(MEASUREMENT_COLUMNS, releasedMeasurements(db, release))
     case 'other-columns.csv':
       return csvDocument(COLUMN_COLUMNS, [
         ...inFile('candidates.csv', CANDIDATE_COLUMNS),
         ...inFile('grades.csv', GRADE_COLUMNS),
         ...inFile('graders.csv', GRADER_COLUMNS),
+        ...inFile('measurements.csv', MEASUREMENT_COLUMNS),
         ...inFile('changes.csv', CHANGE_COLUMNS),
       ])
     case 'rule.json':
