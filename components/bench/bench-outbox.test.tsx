@@ -51,6 +51,26 @@ describe('a grade on its way', () => {
     expect(screen.queryByRole('link', { name: /Sign in/ })).not.toBeInTheDocument()
   })
 
+  it('shows the name of a candidate that the server tells with its answer, there and when one looks back', async () => {
+    room.answerGrade = () => Response.json({ called: 'Curlew 7', grade: { id: 'x' } })
+    const { user } = await open()
+    const spoken = () => document.querySelector('[aria-live]')?.textContent
+    await user.keyboard('a')
+    const before = spoken()
+    expect(await screen.findByText('Curlew 7')).toBeVisible()
+    expect(name()).toBe('SWS-2')
+    expect(spoken()).toBe(before)
+    await user.keyboard('z')
+    expect(name()).toBe('Curlew 7')
+  })
+
+  it('leaves the name as it was where the answer tells none', async () => {
+    const { user } = await open()
+    await user.keyboard('a')
+    await waitFor(() => expect(saved()).toBe('All grades saved'))
+    expect(screen.getByText('SWS-1')).toBeVisible()
+  })
+
   it('says that a first grade replaced one given on another device', async () => {
     room.answerGrade = () => taken('other-id')
     const { user } = await open()

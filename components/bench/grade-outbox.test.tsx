@@ -20,6 +20,7 @@ function browser() {
     const sent: string[] = []
     const refused: RefusedGrade[] = []
     const found: [string, number[]][] = []
+    const names: [number, string][] = []
     const outbox: GradeOutbox = new GradeOutbox({
       store: disk.store,
       older: localStorage,
@@ -216,6 +217,17 @@ describe('two tabs of one person', () => {
     expect([...first.sent, ...second.sent].filter((id) => id === 'uid-2-A')).toHaveLength(1)
     expect(first.outbox.snapshot().waiting).toEqual([])
     expect(second.outbox.snapshot().waiting).toEqual([])
+  })
+
+  it('both hear what a candidate is called once its grade is taken, whichever of them sent it', async () => {
+    const { open } = browser()
+    const first = open([{ outcome: 'saved', called: 'SWS0001' }, { outcome: 'saved' }])
+    const second = open()
+    first.outbox.add(waiting(1))
+    first.outbox.add(waiting(2))
+    await settled()
+    expect(first.names).toEqual([[1, 'SWS0001']])
+    expect(second.names).toEqual([[1, 'SWS0001']])
   })
 
   it('see what waits in the other', async () => {

@@ -17,6 +17,7 @@ const state = (change: Partial<PracticeState> = {}): PracticeState => ({
 })
 
 const TRUTH: PracticeTruth = {
+  name: 'SWS0001',
   truth: 'lens',
   grade: 'N',
   explanation: 'A blue arc 1.4 arcsec to the north-east, painted over a real galaxy.',

@@ -98,7 +98,9 @@ export function PracticeRoom({ slug, campaignName, personId, lead, first }: Prac
                   )}
                 </span>
               </div>
-              {stamp ? <h1 className="figures truncate text-small font-semibold">{stamp.name}</h1> : null}
+              {stamp ? (
+                <h1 className="figures truncate text-small font-semibold">{truth?.name ?? stamp.name}</h1>
+              ) : null}
             </header>
             {stamp ? (
               <div className="flex min-h-0 flex-1 flex-col short:flex-row-reverse">

@@ -34,7 +34,7 @@ export function TruthStage({
         >
           <StampFigure
             src={view?.url ?? null}
-            alt={`${stamp.name}, ${view?.label ?? ''}`}
+            alt={`${truth.name}, ${view?.label ?? ''}`}
             width={view?.width ?? 0}
             height={view?.height ?? 0}
             geometry={view?.geometry ?? stamp.geometry}

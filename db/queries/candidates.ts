@@ -68,11 +68,12 @@ export interface NamedCandidate {
   name: string
 }
 
-/** The candidates before and after this one by name, as the table of candidates sorts them. */
+/** The candidates before and after this one by name, as the table of candidates sorts them, or by number. */
 export async function findNeighbours(
   db: Kysely<DB>,
   { campaignId, withCalibration }: { campaignId: number; withCalibration: boolean },
   id: number,
+  order: 'name' | 'number',
 ): Promise<{ previous: NamedCandidate | null; next: NamedCandidate | null }> {
   const candidates = db
     .selectFrom('candidate')
@@ -80,6 +81,11 @@ export async function findNeighbours(
     .where('campaign_id', '=', campaignId)
     .$if(!withCalibration, (query) => query.where('truth', 'is', null))
     .limit(1)
+  if (order === 'number') {
+    const previous = await candidates.where('id', '<', id).orderBy('id', 'desc').executeTakeFirst()
+    const next = await candidates.where('id', '>', id).orderBy('id').executeTakeFirst()
+    return { previous: previous ?? null, next: next ?? null }
+  }
   const here = sql`(select name, id from candidate where id = ${id})`
   const before = sql<SqlBool>`(name, id) < ${here}`
   const after = sql<SqlBool>`(name, id) > ${here}`

@@ -50,6 +50,7 @@ export async function listJudgedAmong(
 
 export interface CandidateToGrade {
   id: number
+  name: string
   imaged_at: string | null
   grades_given: number
   looks_asked: number
@@ -64,7 +65,7 @@ export async function findCandidateToGrade(
 ): Promise<CandidateToGrade | null> {
   const row = await db
     .selectFrom('candidate')
-    .select(['id', 'imaged_at', 'grades_given', 'looks_asked'])
+    .select(['id', 'name', 'imaged_at', 'grades_given', 'looks_asked'])
     .select(sql<0 | 1>`truth is not null`.as('is_calibration'))
     .where('id', '=', candidateId)
     .where('campaign_id', '=', campaignId)

@@ -2,6 +2,7 @@ import { sql, type RawBuilder, type SqlBool } from 'kysely'
 import type { CandidateScope } from './catalogue'
 import type { AskedColumn } from './list-conditions'
 import type { ListedTable } from './listing'
+import { isNamedTo } from './told-names'
 
 export type ListColumnName =
   | 'name'
@@ -30,6 +31,8 @@ export interface ListColumn extends AskedColumn {
   order?: RawBuilder<unknown>
   /** Of what a reader may have to judge first: what must hold besides. */
   told?: RawBuilder<SqlBool>
+  /** What must hold for a row to be sorted by it; the others come behind, by arrival. */
+  sorted?: RawBuilder<SqlBool>
 }
 
 type Columns = Partial<Record<ListColumnName, ListColumn>>
@@ -106,7 +109,7 @@ function candidateColumns(scope: CandidateScope): Columns {
     judgedBy === null ? value : sql`(case when l.is_stamp then ${ofStamp(judgedBy)} else ${value} end)`
   return {
     ...PLACE,
-    name: { value: sql`l.name`, order: sql`l.name_key` },
+    name: nameColumn(scope),
     state: { value: sql`l.stage`, told: judged },
     grades: { value: shown(sql`l.grades`, countOfStamp), told: judged },
     mean: { value: sql`l.mean`, told: decided },
@@ -123,6 +126,14 @@ function candidateColumns(scope: CandidateScope): Columns {
     entered: { value: sql`l.entered_at`, told: judged },
     calibration: { value: sql`iif(l.is_stamp, 'calibration', 'candidate')` },
   }
+}
+
+/** A grader finds by name, and sorts by it, only what they are told the name of; of the rest they find the number: `candidateNumber`. */
+function nameColumn({ campaignId, judgedBy }: CandidateScope): ListColumn {
+  const column = { value: sql`l.name`, order: sql`l.name_key` }
+  if (judgedBy === null) return column
+  const isNamed = isNamedTo({ campaignId, personId: judgedBy }, 'l.candidate_id')
+  return { ...column, value: sql`iif(${isNamed}, l.name, 'No. ' || l.candidate_id)`, sorted: isNamed }
 }
 
 function entryColumns(scope: CandidateScope): Columns {

@@ -103,18 +103,17 @@ export async function listSlice(
     return ids.map(({ id }) => id)
   }
   const key = column.order ?? column.value
-  const seen = column.told
-    ? sql<SqlBool>`(${isRevealed(scope)} and ${column.told} and ${key} is not null)`
-    : sql<SqlBool>`${key} is not null`
+  const { told, sorted: isSorted = told && sql<SqlBool>`(${isRevealed(scope)} and ${told})` } = column
+  const seen = isSorted ? sql<SqlBool>`(${isSorted} and ${key} is not null)` : sql<SqlBool>`${key} is not null`
   const countSeen = () => count(filtered(db, scope, table, filter).where(seen))
   // A grader's own are few: where the page lies behind them they need not be sorted.
-  const known = column.told && offset > 0 ? await countSeen() : null
+  const known = isSorted && offset > 0 ? await countSeen() : null
   const sorted =
     known !== null && offset >= known
       ? []
       : await rows()
           .where(seen)
-          .orderBy(isFiltered(filter) ? sql`+${key}` : key, direction)
+          .orderBy(isFiltered(filter) || column.sorted ? sql`+${key}` : key, direction)
           .orderBy('l.candidate_id', direction)
           .limit(limit)
           .offset(offset)
@@ -123,7 +122,7 @@ export async function listSlice(
   if (ids.length === limit) return ids
   const before = ids.length > 0 || offset === 0 ? offset + ids.length : (known ?? (await countSeen()))
   const others = await rows()
-    .where(sql<SqlBool>`not ${column.told ? sql`coalesce(${seen}, false)` : seen}`)
+    .where(sql<SqlBool>`not ${isSorted ? sql`coalesce(${seen}, false)` : seen}`)
     .orderBy('l.candidate_id', direction)
     .limit(limit - ids.length)
     .offset(Math.max(0, offset + ids.length - before))

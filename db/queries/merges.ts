@@ -1,4 +1,4 @@
-import { sql, type Kysely } from 'kysely'
+import { sql, type Kysely, type SqlBool } from 'kysely'
 import type { DB } from '../schema'
 import type { CandidateState } from '../schema/intake'
 import type { Decision, Merge } from '../schema/matching'
@@ -213,7 +213,8 @@ export async function insertDecision(db: Kysely<DB>, { about, ...decision }: New
 export interface OtherCampaignMatch {
   candidateId: number
   otherId: number
-  name: string
+  /** null: not told, to a grader there. */
+  name: string | null
   campaign: string
   slug: string
   separationArcsec: number
@@ -225,8 +226,11 @@ export async function listOtherCampaignMatches(
   personId: number,
   candidateIds: readonly number[],
 ): Promise<OtherCampaignMatch[]> {
+  const isNamed = sql<SqlBool>`exists (select 1 from judged where judged.campaign_id = campaign.id
+    and judged.person_id = ${personId} and judged.candidate_id = other.id)`
   const side = (own: 'first' | 'second', other: 'first' | 'second') => sql<OtherCampaignMatch>`
-    select m.${sql.raw(own)}_id as candidateId, other.id as otherId, other.name, campaign.name as campaign, campaign.slug,
+    select m.${sql.raw(own)}_id as candidateId, other.id as otherId,
+      iif(membership.role <> 'grader' or ${isNamed}, other.name, null) as name, campaign.name as campaign, campaign.slug,
       m.separation_arcsec as separationArcsec
     from candidate_match m join candidate other on other.id = m.${sql.raw(other)}_id
       join campaign on campaign.id = m.${sql.raw(other)}_campaign_id

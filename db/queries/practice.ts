@@ -48,6 +48,7 @@ export async function isPracticeUid(db: Kysely<DB>, uid: string): Promise<boolea
 }
 
 export interface StampTruth {
+  name: string
   truth: 'lens' | 'not a lens'
   explanation: string | null
   painting: Json<unknown> | null
@@ -60,7 +61,7 @@ export async function findStampTruth(
 ): Promise<StampTruth | null> {
   const row = await db
     .selectFrom('candidate')
-    .select(['truth', 'explanation', 'painting'])
+    .select(['name', 'truth', 'explanation', 'painting'])
     .where('campaign_id', '=', campaignId)
     .where('id', '=', candidateId)
     .where('truth', 'is not', null)

@@ -19,6 +19,7 @@ import { fromJson } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import { conflict } from '@/lib/platform/problems/problem'
 import type { PaintingTruth } from '@/lib/science/lensing/painting/paint-lens'
+import { withCalled } from '@/lib/work/campaigns/called'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import { confusionOf, type Confusion } from './confusion'
@@ -38,6 +39,8 @@ export interface PracticeState {
 }
 
 export interface PracticeTruth {
+  /** Of the stamp; before the answer a grader is told its number. */
+  name: string
   truth: 'lens' | 'not a lens'
   grade: GradeLetter
   explanation: string
@@ -87,7 +90,7 @@ export async function practiceState(db: Kysely<DB>, permit: CampaignPermit<'grad
     answered,
     wanted: Math.min(campaign.practice_wanted, within),
     stamps,
-    next: next && pictures ? { ...next, ...pictures } : null,
+    next: next && pictures ? { ...(await withCalled(db, permit, [next]))[0], ...pictures } : null,
     own: confusionOf(await countPracticeAnswers(db, campaign.id, viewer.id)),
   }
 }
@@ -131,13 +134,13 @@ export async function answerPractice(
   })
 }
 
-function tell({ truth, explanation, painting }: StampTruth, grade: GradeLetter): PracticeTruth {
+function tell({ name, truth, explanation, painting }: StampTruth, grade: GradeLetter): PracticeTruth {
   const painted = painting === null ? null : (fromJson(painting) as { painted?: PaintingTruth | null }).painted
   const marks = painted
     ? { arcs: painted.arcs, middle: painted.middle, einsteinRadiusArcsec: painted.einsteinRadiusArcsec }
     : null
   const known = truth === 'lens' ? 'A lens, known from elsewhere.' : 'Not a lens, known from elsewhere.'
-  return { truth, grade, explanation: explanation ?? known, marks }
+  return { name, truth, grade, explanation: explanation ?? known, marks }
 }
 
 /** Practice that a newcomer is sent to before the bench; null where they may sit down. Leads and whoever has graded may. */

@@ -1,4 +1,5 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { insertLeftOut } from '@/db/queries/left-out'
 import { giveGrades } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
@@ -91,7 +92,10 @@ it('sorts the table by lens probability, and not so that a grader learns what th
   expect(forLead.map(([name]) => name)).toEqual(['sure', 'likely', 'not', 'fresh'])
   expect(forLead[3][1]).toBeNull()
   // The last grader has judged 'sure' only: the others come as they would without a verdict, by id.
-  expect((await order(scenario.graders[3], false)).map(([name]) => name)).toEqual(['sure', 'likely', 'not', 'fresh'])
+  expect((await order(scenario.graders[3], false)).map(([name]) => name)).toEqual([
+    'sure',
+    ...['likely', 'not', 'fresh'].map((name) => candidateNumber(ids[name])),
+  ])
   expect((await order(scenario.graders[3], true)).slice(1).map(([, probability]) => probability)).toEqual([
     null,
     null,
@@ -128,6 +132,6 @@ it('tells a grader what is decided without anybody’s weight, and of what is op
   expect(await told('stamp')).toEqual(await told('one look'))
   for (const order of ['mean', 'probability'] as const) {
     const names = (await rowsFor(grader, order)).map(({ name }) => name)
-    expect(names.slice(-3).sort()).toEqual(['fresh', 'one look', 'stamp'])
+    expect(names.slice(-3).sort()).toEqual([candidateNumber(ids.fresh), 'one look', 'stamp'].sort())
   }
 })

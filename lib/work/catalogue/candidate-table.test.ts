@@ -1,4 +1,5 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { addCalibrationCandidate, addJudgedCandidate } from '@/tests/_support/judged-candidate'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { candidateTable } from './candidate-table'
@@ -46,11 +47,12 @@ it('sorts by mean with what has none last, both ways', async () => {
 
 it('does not let the order by mean or state give away what a grader has not judged', async () => {
   const grader = scenario.graders[0]
-  await addJudgedCandidate(scenario, 'withheld worst', { grades: ' NNN' })
-  await addJudgedCandidate(scenario, 'withheld best', { grades: ' AAA' })
+  const worst = await addJudgedCandidate(scenario, 'withheld worst', { grades: ' NNN' })
+  const best = await addJudgedCandidate(scenario, 'withheld best', { grades: ' AAA' })
   await addJudgedCandidate(scenario, 'own', { grades: 'BBB ' })
   for (const order of ['mean', 'spread', 'state'] as const) {
-    expect(names(await tableFor(grader, { order }))).toEqual(['own', 'withheld worst', 'withheld best'])
+    const told = names(await tableFor(grader, { order }))
+    expect(told).toEqual(['own', candidateNumber(worst), candidateNumber(best)])
   }
 })
 
@@ -80,29 +82,29 @@ it('counts what passes the filter and all there is, and pages through it', async
 
 it('keeps grades and state of what a grader has not judged out of the row, and finds those by what is withheld', async () => {
   await addJudgedCandidate(scenario, 'own', { grades: 'AAA ' })
-  await addJudgedCandidate(scenario, 'other', { grades: ' AAA' })
+  const other = await addJudgedCandidate(scenario, 'other', { grades: ' AAA' })
   const { rows } = await tableFor(scenario.graders[0])
   expect(rows.map(({ state, votes }) => [state, votes])).toEqual([
     ['confirmed', { A: 3, B: 0, C: 0, N: 0, U: 0 }],
     [null, null],
   ])
-  expect(names(await tableFor(scenario.graders[0], { filter: { withheld: true } }))).toEqual(['other'])
+  expect(names(await tableFor(scenario.graders[0], { filter: { withheld: true } }))).toEqual([candidateNumber(other)])
   expect(names(await tableFor(scenario.graders[0], { filter: { states: ['confirmed'] } }))).toEqual(['own'])
   expect((await tableFor(scenario.graders[0], { filter: { states: ['confirmed'] } })).count).toBe(1)
 })
 
 it('sorts by score and filters calibration for leads, and passes both over for others', async () => {
-  await addImagedCandidate(scenario.db, scenario.campaign, 'low')
-  await addImagedCandidate(scenario.db, scenario.campaign, 'high')
-  await addCalibrationCandidate(scenario, 'calibration')
+  const low = await addImagedCandidate(scenario.db, scenario.campaign, 'low')
+  const high = await addImagedCandidate(scenario.db, scenario.campaign, 'high')
+  const stamp = await addCalibrationCandidate(scenario, 'calibration')
   await scenario.db.updateTable('candidate').set({ score: 0.9 }).where('name', '=', 'high').execute()
   await scenario.db.updateTable('candidate').set({ score: 0.1 }).where('name', '=', 'low').execute()
   const byScore = { order: 'score', descending: true } as const
   expect(names(await tableFor(scenario.lead, byScore))).toEqual(['high', 'low', 'calibration'])
   expect(names(await tableFor(scenario.graders[0], { ...byScore, descending: false }))).toEqual([
-    'calibration',
-    'high',
-    'low',
+    candidateNumber(low),
+    candidateNumber(high),
+    candidateNumber(stamp),
   ])
   expect(names(await tableFor(scenario.lead, { filter: CALIBRATION }))).toEqual(['calibration'])
   expect(names(await tableFor(scenario.graders[0], { filter: CALIBRATION }))).toHaveLength(3)

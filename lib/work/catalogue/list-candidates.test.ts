@@ -1,4 +1,5 @@
 import { afterEach, beforeEach, expect, it } from 'vitest'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { addCalibrationCandidate, addJudgedCandidate, giveGrades } from '@/tests/_support/judged-candidate'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { listCandidates } from './list-candidates'
@@ -43,7 +44,7 @@ it.each(['', 'x', '17', 'YWZ0ZXI6MA', 'YWZ0ZXI6MQ==', 'YWZ0ZXI6LTE'])(
 )
 
 it('tells leads and viewers the verdict with its reason, and a grader only after their own grade', async () => {
-  await addJudgedCandidate(scenario, 'judged', { grades: 'AAB ' })
+  const id = await addJudgedCandidate(scenario, 'judged', { grades: 'AAB ' })
   const [forLead] = (await listFor(scenario.lead)).candidates
   expect(forLead).toMatchObject({
     state: 'confirmed',
@@ -56,7 +57,13 @@ it('tells leads and viewers the verdict with its reason, and a grader only after
   expect((await listFor(scenario.reader)).candidates[0]).toMatchObject({ state: 'confirmed', withheld: false })
   expect((await listFor(scenario.graders[0])).candidates[0]).toMatchObject({ state: 'confirmed', withheld: false })
   const [withheld] = (await listFor(scenario.graders[3])).candidates
-  expect(withheld).toMatchObject({ state: null, verdict: null, designation: null, withheld: true, name: 'judged' })
+  expect(withheld).toMatchObject({
+    state: null,
+    verdict: null,
+    designation: null,
+    withheld: true,
+    name: candidateNumber(id),
+  })
 })
 
 it("does not count 'cannot judge' as a grade that opens the verdict", async () => {

@@ -4,6 +4,7 @@ import { listCandidatesAfter, type CandidateRow } from '@/db/queries/catalogue'
 import type { DB } from '@/db/schema'
 import type { CandidateState } from '@/db/schema/intake'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
+import { calledTo } from '@/lib/work/campaigns/called'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { reasonInShort } from '@/lib/work/rulings/reason-in-short'
 import { readCursor, writeCursor } from './candidate-cursor'
@@ -24,6 +25,7 @@ export interface ListedVerdict {
 
 export interface ListedCandidate {
   id: number
+  /** To a grader who has not judged it yet: its number. */
   name: string
   /** ICRS degrees */
   raDeg: number | null
@@ -86,9 +88,15 @@ export async function asListed(
     permit,
     rows.map((row) => row.id),
   )
+  const called = await calledTo(
+    db,
+    permit,
+    rows.map((row) => row.id),
+  )
   return rows.map((row) => {
     const withheld = !revealed.has(row.id)
-    const { id, name, raDeg, decDeg } = row
+    const { id, raDeg, decDeg } = row
+    const name = called(row)
     const forLead = permit.role === 'lead' ? { score: row.score, calibration: row.calibration === 1 } : {}
     const judged = withheld
       ? { state: null, verdict: null, designation: null }

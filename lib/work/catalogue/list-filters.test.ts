@@ -14,10 +14,18 @@ afterEach(() => scenario.db.destroy())
 
 const AS_IT_COMES: TableInput = { filter: {}, order: 'id', descending: false, page: 0, pageSize: 100 }
 
+/** Their names, whatever they are called to the reader. */
+async function named(rows: readonly { id: number }[]): Promise<string[]> {
+  const known = new Map(
+    (await scenario.db.selectFrom('candidate').select(['id', 'name']).execute()).map((row) => [row.id, row.name]),
+  )
+  return rows.map(({ id }) => known.get(id)!)
+}
+
 async function candidates(viewer: Scenario['lead'], input: Partial<TableInput>) {
   const table = await candidateTable(scenario.db, await scenario.permit(viewer, 'read'), { ...AS_IT_COMES, ...input })
   expect(table.count).toBe(table.rows.length)
-  return table.rows.map(({ name }) => name)
+  return named(table.rows)
 }
 
 async function catalogue(viewer: Scenario['lead'], input: Partial<TableInput>) {

@@ -1,5 +1,6 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import type { GradeLetter } from '@/db/schema/grading'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { GradeInput } from '@/lib/work/grading/grade-input'
@@ -54,14 +55,14 @@ const nothingAsked = async () => {
 }
 
 describe('asking for a look', () => {
-  it('puts the candidate first on the bench of who is asked, also where they have graded it, and on nobody else’s', async () => {
-    await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
+  it('puts the candidate first on the bench of who is asked, by name, also where they have graded it, and on nobody else’s', async () => {
+    const other = await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
     await ask([curlew, plover], 'Mind the arc.')
     for (const person of [curlew, plover]) {
       expect(await bench(person)).toEqual({
         candidates: [
           { name: 'SWS-1', asked: 'avocet' },
-          { name: 'SWS-2', asked: null },
+          { name: candidateNumber(other), asked: null },
         ],
         left: 2,
       })
@@ -171,7 +172,7 @@ describe('the answer', () => {
   it('of somebody who had not graded takes no place that another holds on their bench', async () => {
     const open = await addImagedCandidate(scenario.db, scenario.campaign, 'SWS-2')
     await grade(curlew, 'B', {}, open)
-    expect((await bench(dunlin)).candidates).toMatchObject([{ name: 'SWS-2' }])
+    expect((await bench(dunlin)).candidates).toMatchObject([{ name: candidateNumber(open) }])
     await ask([plover], null, open)
     await grade(plover, 'N', { asked: true }, open)
     expect((await grade(dunlin, 'A', {}, open)).grade.grade).toBe('A')

@@ -1,5 +1,6 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import type { GradeLetter } from '@/db/schema/grading'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { GradeInput } from '@/lib/work/grading/grade-input'
 import { recordGrade } from '@/lib/work/grading/record-grade'
 import { endMembership } from '@/lib/work/people/change-membership'
@@ -128,8 +129,10 @@ describe('a mention', () => {
     expect(mail).toMatchObject({ recipient: 'plover@saltmarsh.test' })
     expect(mail.body).toContain('opens once you have graded the candidate yourself')
     expect(mail.body).not.toMatch(/avocet|everybody|says/)
+    expect(mail.body).toContain(`in the discussion of ${candidateNumber(candidate)} in`)
+    expect(mail.body).not.toContain('SWS-1')
     const [waitingMention] = await mentions(plover)
-    expect(waitingMention).toMatchObject({ candidate: 'SWS-1', message: null, unread: true })
+    expect(waitingMention).toMatchObject({ candidate: candidateNumber(candidate), message: null, unread: true })
     await read(plover)
     expect((await waiting(plover)).mentions).toBe(1)
     await grade(plover, 'N')

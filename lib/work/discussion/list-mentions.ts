@@ -4,6 +4,7 @@ import { countUnreadMentions, listMentionedOn, listMentionsOf } from '@/db/queri
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
+import { calledTo } from '@/lib/work/campaigns/called'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { askedOfMe } from './list-asks'
 import { partsOf, plainOf } from './mentions'
@@ -24,7 +25,9 @@ const MOST_MENTIONS = 100
 export async function mentionsOfMe(db: Kysely<DB>, permit: CampaignPermit<'read'>): Promise<Mention[]> {
   const { campaign, viewer, role } = permit
   const rows = await listMentionsOf(db, campaign.id, viewer.id, MOST_MENTIONS)
-  const revealed = await revealedTo(db, permit, [...new Set(rows.map(({ candidateId }) => candidateId))])
+  const ids = [...new Set(rows.map(({ candidateId }) => candidateId))]
+  const revealed = await revealedTo(db, permit, ids)
+  const called = await calledTo(db, permit, ids)
   await noteShown(db, permit, [...revealed])
   const named = role === 'lead'
   const mentions: Mention[] = []
@@ -33,7 +36,7 @@ export async function mentionsOfMe(db: Kysely<DB>, permit: CampaignPermit<'read'
     mentions.push({
       messageId: row.messageId,
       candidateId: row.candidateId,
-      candidate: row.candidate,
+      candidate: called({ id: row.candidateId, name: row.candidate }),
       at: row.at,
       unread: row.readAt === null,
       message: mentioned && {

@@ -9,6 +9,7 @@ import { isoTime } from '@/lib/platform/clock'
 import { config } from '@/lib/platform/config/config'
 import { queueMail } from '@/lib/platform/mail/queue-mail'
 import { conflict, notFound } from '@/lib/platform/problems/problem'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { noteTold, revealedTo } from '@/lib/work/grading/may-reveal'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { mentionMail } from './mention-mail'
@@ -78,7 +79,7 @@ async function writeTo(
   const mail = mentionMail({
     email: person.email,
     campaignName: campaign.name,
-    candidate: candidate.name,
+    candidate: told ? candidate.name : candidateNumber(candidate.id),
     link: `${config().siteUrl}/campaigns/${campaign.slug}/candidates/${candidate.id}#discussion`,
     message: told ? { by, text } : null,
   })

@@ -21,6 +21,7 @@ import { fromJson, toJson, type IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
 import { requestConsensus } from '@/lib/platform/jobs/request-consensus'
 import { conflict, invalid, notFound } from '@/lib/platform/problems/problem'
+import { calledTo } from '@/lib/work/campaigns/called'
 import { ruleInForce, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { keepEstimate } from '@/lib/work/queue/keep-estimates'
@@ -43,6 +44,8 @@ export interface GivenGrade {
 }
 
 export interface RecordedGrade {
+  /** What the candidate is called to the person now: its name once they have judged it. */
+  called: string
   /** The person's grade of this candidate as it stands now. */
   grade: GivenGrade
   /** The id of the grade that this call corrected. */
@@ -71,69 +74,81 @@ export async function recordGrade(
   candidateId: number,
   input: GradeInput,
 ): Promise<RecordedGrade> {
-  const { campaign, viewer } = permit
   const recorded = await db.transaction().execute(async (transaction) => {
-    const candidate = await findCandidateToGrade(transaction, campaign.id, candidateId)
+    const candidate = await findCandidateToGrade(transaction, permit.campaign.id, candidateId)
     if (!candidate) throw notFound('candidate')
     if (!candidate.imaged_at) {
       throw conflict('not-imaged', 'This candidate has no pictures yet, so there is nothing to grade. Try again later.')
     }
-    const standing = await findStandingAnswer(transaction, candidateId, viewer.id)
-    const late = standing ? null : await findLateAnswer(transaction, candidateId, viewer.id)
-    const delivered = await isDelivered(transaction, candidateId, viewer.id, input)
-    if (input.turned !== null) {
-      const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
-      return recordRepeat(transaction, permit, candidateId, input, { recipeId, delivered })
-    }
-    const known = standing ?? late
-    if (known && delivered) return { row: known, replaced: null }
-    if (delivered) throw taken()
-    const ask = await askAnsweredBy(transaction, candidateId, viewer.id, { asked: input.asked, standing })
-    const corrected = ask ? null : standing
-    if (corrected && saysTheSame(corrected, input)) return { row: corrected, replaced: null }
-    if (late && !ask && saysTheSame(late, input)) return { row: late, replaced: null }
-    if (corrected || (late && !ask)) await assertUnswayed(transaction, permit, candidateId)
-    const rule = await ruleInForce(transaction, campaign.id)
-    if (!standing && !late) await assertMayBegin(transaction, permit, candidate)
-    const room = await roomAt(transaction, candidate, viewer.id, rule)
-    if (!corrected && !ask && !candidate.is_calibration && (late || room !== 'left')) {
-      if (!late && !input.late) throw full(room)
-      const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
-      return recordLate(transaction, permit, candidateId, input, { recipeId, corrected: late })
-    }
-    const first = !standing && (!ask || room === 'left')
-    const row = await insertGrade(transaction, {
-      uid: input.id ?? randomUUID(),
-      campaign_id: campaign.id,
-      candidate_id: candidateId,
-      person_id: viewer.id,
-      occasion: first ? 'first' : ask ? 'asked' : (corrected?.occasion ?? 'first'),
-      grade: input.grade,
-      tags: toJson<string[]>(input.tags),
-      reason: input.reason,
-      remark: input.remark,
-      recipe_id: await recipeSeen(transaction, campaign.id, candidateId, input.recipe),
-      view: input.view,
-      seconds: input.seconds,
-      replaces: corrected?.id ?? null,
-      given_at: isoTime(),
-    })
-    if (ask) await setAskAnswered(transaction, { id: ask.id, gradeId: row.id, candidateId, personId: viewer.id })
-    if (first) await setFirstGradeGiven(transaction, candidateId, viewer.id)
-    await keepEstimate(transaction, campaign.id, rule, candidateId)
-    const enough = rule.method === 'reliability' || candidate.grades_given + (first ? 1 : 0) >= rule.leastGrades
-    if (ask || enough) {
-      await requestConsensus(transaction, campaign.id, await consensusDelayMs(transaction, campaign.id, rule, row))
-    }
-    const open = corrected ? await findOpenAsk(transaction, candidateId, viewer.id) : null
-    return { row, replaced: corrected?.uid ?? null, stillAsked: open?.id }
+    const given = await record(transaction, permit, candidate, input)
+    return { ...given, called: (await calledTo(transaction, permit, [candidateId]))(candidate) }
   })
   return {
+    called: recorded.called,
     grade: shapeGrade(recorded.row),
     ...(recorded.replaced ? { replaced: recorded.replaced } : {}),
-    ...('stillAsked' in recorded && recorded.stillAsked ? { stillAsked: recorded.stillAsked } : {}),
+    ...(recorded.stillAsked ? { stillAsked: recorded.stillAsked } : {}),
     ...(recorded.row.occasion === 'late' ? { late: true as const } : {}),
   }
+}
+
+async function record(
+  transaction: Transaction<DB>,
+  permit: CampaignPermit<'grade'>,
+  candidate: CandidateToGrade,
+  input: GradeInput,
+): Promise<{ row: GradeRow; replaced: string | null; stillAsked?: number }> {
+  const { campaign, viewer } = permit
+  const candidateId = candidate.id
+  const standing = await findStandingAnswer(transaction, candidateId, viewer.id)
+  const late = standing ? null : await findLateAnswer(transaction, candidateId, viewer.id)
+  const delivered = await isDelivered(transaction, candidateId, viewer.id, input)
+  if (input.turned !== null) {
+    const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
+    return recordRepeat(transaction, permit, candidateId, input, { recipeId, delivered })
+  }
+  const known = standing ?? late
+  if (known && delivered) return { row: known, replaced: null }
+  if (delivered) throw taken()
+  const ask = await askAnsweredBy(transaction, candidateId, viewer.id, { asked: input.asked, standing })
+  const corrected = ask ? null : standing
+  if (corrected && saysTheSame(corrected, input)) return { row: corrected, replaced: null }
+  if (late && !ask && saysTheSame(late, input)) return { row: late, replaced: null }
+  if (corrected || (late && !ask)) await assertUnswayed(transaction, permit, candidateId)
+  const rule = await ruleInForce(transaction, campaign.id)
+  if (!standing && !late) await assertMayBegin(transaction, permit, candidate)
+  const room = await roomAt(transaction, candidate, viewer.id, rule)
+  if (!corrected && !ask && !candidate.is_calibration && (late || room !== 'left')) {
+    if (!late && !input.late) throw full(room)
+    const recipeId = await recipeSeen(transaction, campaign.id, candidateId, input.recipe)
+    return recordLate(transaction, permit, candidateId, input, { recipeId, corrected: late })
+  }
+  const first = !standing && (!ask || room === 'left')
+  const row = await insertGrade(transaction, {
+    uid: input.id ?? randomUUID(),
+    campaign_id: campaign.id,
+    candidate_id: candidateId,
+    person_id: viewer.id,
+    occasion: first ? 'first' : ask ? 'asked' : (corrected?.occasion ?? 'first'),
+    grade: input.grade,
+    tags: toJson<string[]>(input.tags),
+    reason: input.reason,
+    remark: input.remark,
+    recipe_id: await recipeSeen(transaction, campaign.id, candidateId, input.recipe),
+    view: input.view,
+    seconds: input.seconds,
+    replaces: corrected?.id ?? null,
+    given_at: isoTime(),
+  })
+  if (ask) await setAskAnswered(transaction, { id: ask.id, gradeId: row.id, candidateId, personId: viewer.id })
+  if (first) await setFirstGradeGiven(transaction, candidateId, viewer.id)
+  await keepEstimate(transaction, campaign.id, rule, candidateId)
+  const enough = rule.method === 'reliability' || candidate.grades_given + (first ? 1 : 0) >= rule.leastGrades
+  if (ask || enough) {
+    await requestConsensus(transaction, campaign.id, await consensusDelayMs(transaction, campaign.id, rule, row))
+  }
+  const open = corrected ? await findOpenAsk(transaction, candidateId, viewer.id) : null
+  return { row, replaced: corrected?.uid ?? null, stillAsked: open?.id }
 }
 
 /**

@@ -11,6 +11,7 @@ import {
 } from '@/db/queries/merges'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateEvidence, type Judgement } from '@/lib/work/rulings/candidate-evidence'
 import { toldOf } from './known-labels'
@@ -41,7 +42,7 @@ export interface CandidateMatches {
   /** Nearest first. Only leads are told those that a lead has found to differ. */
   objects: ObjectMatchRow[]
   /** In other campaigns that the person is a member of. */
-  elsewhere: OtherCampaignMatch[]
+  elsewhere: (OtherCampaignMatch & { name: string })[]
   /** In the same campaign; not told to graders. */
   near: DuplicateOf[]
   merges: ToldMerge[]
@@ -75,7 +76,10 @@ export async function candidateMatches(
   }
   return {
     objects: objects.filter(({ decision }) => role === 'lead' || decision !== 'different'),
-    elsewhere: await listOtherCampaignMatches(db, viewer.id, [candidateId]),
+    elsewhere: (await listOtherCampaignMatches(db, viewer.id, [candidateId])).map((one) => ({
+      ...one,
+      name: one.name ?? candidateNumber(one.otherId),
+    })),
     near: role === 'grader' ? [] : await listDuplicatesOf(db, campaign.id, candidateId, campaign.match_radius_arcsec),
     merges,
     histories,

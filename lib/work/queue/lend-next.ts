@@ -4,13 +4,17 @@ import { hasImagedCandidate, type QueuedCandidate } from '@/db/queries/queue'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
 import { turnGeometry } from '@/lib/science/imaging/turn-geometry'
+import { withCalled } from '@/lib/work/campaigns/called'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { picturesOf, type CandidatePictures } from '@/lib/work/stamps/candidate-pictures'
 import type { AskedLook } from './asked-looks'
 import { lendCandidates } from './lend-candidates'
 import { queueProgress, type QueueProgress } from './queue-progress'
 
-/** What a grader gets to see of a candidate before grading it: nothing that others, the machine or the rule made of it. */
+/**
+ * What a grader gets to see of a candidate before grading it: nothing that others, the machine or the rule made of it, and a number
+ * for its name until they have judged it.
+ */
 export interface BenchCandidate extends QueuedCandidate, CandidatePictures {
   /** A lead has asked this person by name for this look. */
   asked?: AskedLook
@@ -39,7 +43,7 @@ export async function lendNext(db: Kysely<DB>, permit: CampaignPermit<'grade'>, 
     lent.candidates.map(({ id }) => id),
   )
   return {
-    candidates: lent.candidates.flatMap((candidate) => {
+    candidates: (await withCalled(db, permit, lent.candidates)).flatMap((candidate) => {
       const shown = pictures.get(candidate.id)
       if (!shown) return []
       return [{ ...candidate, ...('turned' in candidate ? turnPictures(shown, candidate.turned) : shown) }]

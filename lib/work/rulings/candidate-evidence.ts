@@ -12,6 +12,7 @@ import type { Candidate, CandidateState, StateCause } from '@/db/schema/intake'
 import { fromJson, type IsoTime } from '@/db/schema/values'
 import { notFound } from '@/lib/platform/problems/problem'
 import { CLOSE_FIELD_ARCSEC } from '@/lib/science/imaging/recipe'
+import { calledTo } from '@/lib/work/campaigns/called'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { ruleOf, type RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import { answeredPeople } from '@/lib/work/discussion/list-asks'
@@ -27,6 +28,7 @@ import { withoutMergedNames } from './without-merged-names'
 /** Everything there is to say about one candidate, for the case of a split and for the candidate's page. */
 export interface CandidateEvidence {
   id: number
+  /** To a grader who has not judged it yet: its number. */
   name: string
   /** ICRS degrees */
   raDeg: number | null
@@ -141,7 +143,7 @@ export async function candidateEvidence(
   if (revealed) await noteShown(db, permit, [candidateId])
   return {
     id: candidate.id,
-    name: candidate.name,
+    name: (await calledTo(db, permit, [candidateId]))(candidate),
     raDeg: candidate.ra_deg,
     decDeg: candidate.dec_deg,
     pixelScaleArcsec: candidate.pixel_scale_arcsec,

@@ -2,10 +2,11 @@ import 'server-only'
 import type { Kysely } from 'kysely'
 import { findCandidate, listCandidateNames } from '@/db/queries/candidates'
 import type { DB } from '@/db/schema'
+import { calledTo } from '@/lib/work/campaigns/called'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 
-/** For the title of a page; null where the person's lists do not hold the candidate. */
+/** What it is called in the title of a page; null where the person's lists do not hold the candidate. */
 export async function candidateName(
   db: Kysely<DB>,
   permit: CampaignPermit<'read'>,
@@ -13,7 +14,8 @@ export async function candidateName(
 ): Promise<string | null> {
   const { campaignId, withCalibration } = candidateScope(permit)
   const candidate = await findCandidate(db, campaignId, candidateId)
-  return candidate && (candidate.truth === null || withCalibration) ? candidate.name : null
+  if (!candidate || (candidate.truth !== null && !withCalibration)) return null
+  return (await calledTo(db, permit, [candidateId]))(candidate)
 }
 
 /** Names of those of the candidates that are in the campaign. */

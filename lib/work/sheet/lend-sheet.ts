@@ -16,13 +16,14 @@ import type { DB } from '@/db/schema'
 import type { Campaign } from '@/db/schema/campaigns'
 import type { IsoTime } from '@/db/schema/values'
 import { isoTime } from '@/lib/platform/clock'
+import { withCalled } from '@/lib/work/campaigns/called'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { LEASE_MS } from '@/lib/work/queue/lease-time'
 import { picturesOf } from '@/lib/work/stamps/candidate-pictures'
 import { assertPasses, assertUsesSheet } from './may-pass'
 import { MOST_ON_SHEET } from './mark-input'
 
-/** A small stamp: nothing that others, the machine or the truth say of it. */
+/** A small stamp: nothing that others, the machine or the truth say of it; to graders a number for its name. */
 export interface SheetStamp {
   id: number
   name: string
@@ -61,7 +62,7 @@ export async function lendSheet(db: Kysely<DB>, permit: CampaignPermit<'grade'>,
     campaign,
     lent.stamps.map(({ id }) => id),
   )
-  const stamps = lent.stamps.map(({ id, name }) => ({
+  const stamps = (await withCalled(db, permit, lent.stamps)).map(({ id, name }) => ({
     id,
     name,
     views: (pictures.get(id)?.views ?? []).map(({ key, label, url, width, height }) => ({
@@ -92,7 +93,7 @@ const FEW = 5000
 const SPREAD = 2 ** 32
 
 /**
- * From all over the campaign, else a calibration stamp would stand out by its name among neighbours in intake: by the spread from
+ * From all over the campaign, else a calibration stamp would stand out among neighbours in intake: by the spread from
  * a place that is drawn, or all that waits drawn from where it is little. Where the score comes first, that mixes them.
  */
 async function drawWaiting(transaction: Kysely<DB>, campaign: Campaign, passer: Passer, limit: number) {

@@ -1,5 +1,6 @@
 import { NextRequest } from 'next/server'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { PUT as putGrade } from '../candidates/[id]/grade/route'
@@ -35,10 +36,13 @@ function grade(viewer: Viewer | null, id: number | string, body: string, headers
 
 describe('GET queue', () => {
   it('lends to a grader and to a lead as many as asked for, and is never kept by a cache', async () => {
-    for (const viewer of [scenario.graders[0], scenario.lead]) {
+    for (const [viewer, name] of [
+      [scenario.graders[0], candidateNumber(ids[0])],
+      [scenario.lead, 'SWS-1'],
+    ] as const) {
       const response = await queue(getQueue, viewer, '?count=1')
       expect(response.headers.get('cache-control')).toBe('no-store')
-      expect(await response.json()).toMatchObject({ candidates: [{ id: ids[0], name: 'SWS-1' }], left: 2, given: 0 })
+      expect(await response.json()).toMatchObject({ candidates: [{ id: ids[0], name }], left: 2, given: 0 })
     }
   })
 
@@ -77,7 +81,7 @@ describe('PUT grade', () => {
     expect(first).toMatchObject({ grade: { grade: 'A', tags: ['arc'] } })
     expect(await (await grade(scenario.graders[0], ids[0], body)).json()).toEqual(first)
     // Counts of the whole campaign come with the queue: a grade costs the same however large the campaign is.
-    expect(Object.keys(first)).toEqual(['grade'])
+    expect(Object.keys(first)).toEqual(['called', 'grade'])
     expect(await (await queue(getQueue, scenario.graders[0])).json()).toMatchObject({ given: 1, left: 1 })
   })
 
