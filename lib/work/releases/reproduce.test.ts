@@ -3,11 +3,12 @@ import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { Readable } from 'node:stream'
+import Papa from 'papaparse'
 import { afterEach, beforeEach, expect, it } from 'vitest'
 import { leaveOut } from '@/lib/work/consensus/leave-out'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { addGraded, makeReleaseScenario, publishAndMake, type ReleaseScenario } from './_release-scenario'
-import { ReleaseZip } from './read-release-zip'
+import { NotARelease, ReleaseZip } from './read-release-zip'
 import { reproduce } from './reproduce'
 import { inWords } from './run-reproduce'
 import { zipOf } from './zip-files'
@@ -128,7 +129,74 @@ it('finds an entry that was taken out of the catalogue', async () => {
   )
   expect((await reproduce(copy)).differences).toEqual([
     expect.objectContaining({ candidate: 'SWS 4, "é"', what: 'catalogue', released: 'no entry' }),
+    { candidate: 'catalogue.csv', what: 'rows', released: '4 by rule.json', recomputed: '3' },
   ])
+})
+
+/** `catalogue.csv` with one field of its first row otherwise. */
+const withField = (column: string, value: string) => (text: string) => {
+  const [head, first, ...rest] = text.split('\r\n')
+  const row = Papa.parse<Record<string, string>>(`${head}\r\n${first}`, { header: true }).data[0]
+  expect(row[column]).not.toBe(value)
+  return [head, Papa.unparse([{ ...row, [column]: value }], { header: false }), ...rest].join('\r\n')
+}
+
+it.each([
+  ['designation', 'SWS J999'],
+  ['ra', '99'],
+  ['dec', '9'],
+  ['grade_class', 'C'],
+  ['votes_a', '0'],
+  ['votes_n', '2'],
+  ['n_grades', '9'],
+  ['n_cannot_judge', '1'],
+  ['mean_points', '1'],
+  ['spread_points', '0'],
+  ['probability', '0.5'],
+  ['decided_by', 'ruling'],
+  ['reason', 'Because.'],
+])('finds %s of an entry that was changed', async (column, value) => {
+  const copy = await tampered(await publish(MEAN), 'catalogue.csv', withField(column, value))
+  const { differences } = await reproduce(copy)
+  expect(differences).toEqual([
+    expect.objectContaining({
+      candidate: 'SWS 0, "é"',
+      what: expect.stringContaining("the catalogue's"),
+      released: value,
+    }),
+  ])
+})
+
+it('counts for itself which grades count', async () => {
+  const copy = await tampered(await publish(MEAN), 'grades.csv', (text) => {
+    const changed = text.replace(/("SWS 1, ""é""",G02,first,N),yes,/, '$1,no,')
+    expect(changed).not.toBe(text)
+    return changed
+  })
+  expect((await reproduce(copy)).differences).toEqual([
+    { candidate: 'SWS 1, "é"', what: 'a grade of G02', released: 'not counted', recomputed: 'counted' },
+  ])
+})
+
+it('finds that all its tables were emptied', async () => {
+  let copy = await publish(MEAN)
+  for (const file of ['candidates.csv', 'grades.csv', 'catalogue.csv']) {
+    copy = await tampered(copy, file, (text) => text.split('\r\n')[0] + '\r\n')
+  }
+  const { differences } = await reproduce(copy)
+  expect(differences).toEqual([
+    { candidate: 'candidates.csv', what: 'rows', released: '8 by rule.json', recomputed: '0' },
+    { candidate: 'catalogue.csv', what: 'rows', released: '4 by rule.json', recomputed: '0' },
+  ])
+})
+
+it.each([
+  ['cut off', (text: string) => text.slice(0, 50)],
+  ["another program's", () => '{}'],
+])('refuses an archive whose rule.json is %s in words', async (_, change) => {
+  const copy = await tampered(await publish(MEAN), 'rule.json', change)
+  await expect(reproduce(copy)).rejects.toThrow(/^rule\.json is not one that this version/)
+  await expect(reproduce(copy)).rejects.toBeInstanceOf(NotARelease)
 })
 
 it('refuses an archive of which a byte was lost, one that was cut off, and one that is none', async () => {

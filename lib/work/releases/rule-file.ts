@@ -15,6 +15,8 @@ export function ruleFile(release: {
   recipeHash: string | null
   software: string
   frozenAt: string
+  candidates: number
+  entries: number
   model: RunModel | null
   cautions: readonly string[]
 }): string {
@@ -29,6 +31,8 @@ export function ruleFile(release: {
         release: release.number,
         kind: release.kind,
         frozenAt: release.frozenAt,
+        candidates: release.candidates,
+        entries: release.entries,
         software: release.software,
         rule: parameters,
         gradePoints: GRADE_POINTS,
@@ -66,6 +70,8 @@ export const RuleFile = z.object({
   release: z.number(),
   campaign: z.string(),
   kind: z.enum(['release', 'erratum', 'retraction']),
+  candidates: z.int().nonnegative(),
+  entries: z.int().nonnegative(),
   rule: z.discriminatedUnion('method', [
     z.object({
       method: z.literal('mean'),

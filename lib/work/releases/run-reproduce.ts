@@ -4,12 +4,16 @@ import { reproduce, type Reproduction } from './reproduce'
 
 const MOST_LISTED = 50
 
+const COMPARED =
+  'Compared: verdicts, states, numbers and places in candidates.csv and catalogue.csv. Not compared, since no grade tells them: remarks, ' +
+  'tags, known objects, measurements, redshifts; nor the copies of the catalogue as VOTable and JSON.'
+
 /** What is printed, and the exit code: 0 all agree, 1 some do not. */
 export function inWords({ release, campaign, kind, verdicts, grades, differences }: Reproduction): string[] {
   const which = `Release ${release} of ${campaign}`
   if (kind === 'retraction') return [`${which} is a retraction: it has no verdicts, only the reason in README.txt.`]
   if (differences.length === 0) {
-    return [`${which}: ${grades} grades.`, `All ${verdicts} verdicts agree.`]
+    return [`${which}: ${grades} grades. ${COMPARED}`, `All ${verdicts} verdicts agree.`]
   }
   const differing = new Set(differences.map(({ candidate }) => candidate)).size
   const listed = differences

@@ -112,6 +112,8 @@ export function textOf(db: Kysely<DB>, name: ReleaseFileName, about: Surrounding
           recipeHash: release.recipe_hash,
           software: release.software,
           frozenAt: release.created_at,
+          candidates: release.candidates,
+          entries: release.entries,
           model: judged.model,
           cautions: cautionsOf(release),
         }),
