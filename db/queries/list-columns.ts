@@ -29,6 +29,8 @@ export type ListColumnName =
 export interface ListColumn extends AskedColumn {
   /** What is sorted by, where that is not the value. */
   order?: RawBuilder<unknown>
+  /** Every row has a value. */
+  isAlwaysThere?: boolean
   /** Of what a reader may have to judge first: what must hold besides. */
   told?: RawBuilder<SqlBool>
   /** What must hold for a row to be sorted by it; the others come behind, by arrival. */
@@ -110,8 +112,8 @@ function candidateColumns(scope: CandidateScope): Columns {
   return {
     ...PLACE,
     name: nameColumn(scope),
-    state: { value: sql`l.stage`, told: judged },
-    grades: { value: shown(sql`l.grades`, countOfStamp), told: judged },
+    state: { value: sql`l.stage`, told: judged, isAlwaysThere: true },
+    grades: { value: shown(sql`l.grades`, countOfStamp), told: judged, isAlwaysThere: true },
     mean: { value: sql`l.mean`, told: decided },
     spread: { value: sql`l.spread`, told: decided },
     probability: { value: sql`l.probability`, told: decided },
@@ -130,7 +132,7 @@ function candidateColumns(scope: CandidateScope): Columns {
 
 /** A grader finds by name, and sorts by it, only what they are told the name of; of the rest they find the number: `candidateNumber`. */
 function nameColumn({ campaignId, judgedBy }: CandidateScope): ListColumn {
-  const column = { value: sql`l.name`, order: sql`l.name_key` }
+  const column = { value: sql`l.name`, order: sql`l.name_key`, isAlwaysThere: true }
   if (judgedBy === null) return column
   const isNamed = isNamedTo({ campaignId, personId: judgedBy }, 'l.candidate_id')
   return { ...column, value: sql`iif(${isNamed}, l.name, 'No. ' || l.candidate_id)`, sorted: isNamed }
@@ -139,7 +141,7 @@ function nameColumn({ campaignId, judgedBy }: CandidateScope): ListColumn {
 function entryColumns(scope: CandidateScope): Columns {
   return {
     ...PLACE,
-    name: { value: sql`l.name`, order: sql`l.name_key` },
+    name: { value: sql`l.name`, order: sql`l.name_key`, isAlwaysThere: true },
     designation: { value: sql`(ifnull(l.designation, '') || ' ' || l.name)`, order: sql`l.designation` },
     class: { value: sql`l.grade_class` },
     grades: { value: sql`l.entry_grades` },

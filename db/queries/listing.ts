@@ -3,7 +3,7 @@ import type { DB } from '../schema'
 import { isRevealed as isRevealedAt, type CandidateScope } from './catalogue'
 import { among } from './by-ids'
 import { isWithin, meets, type ColumnCondition, type SkyCone } from './list-conditions'
-import { listColumns, type ListColumnName } from './list-columns'
+import { listColumns, type ListColumn, type ListColumnName } from './list-columns'
 
 /** Which table is listed: every candidate, or what is confirmed and may be seen as such. */
 export type ListedTable = 'candidates' | 'catalogue'
@@ -83,18 +83,27 @@ function filtered(db: Kysely<DB>, scope: CandidateScope, table: ListedTable, fil
   )
 }
 
+/** What must hold for a row to be sorted by the column; undefined where nothing must. */
+const sortedOf = (scope: CandidateScope, { told, sorted }: ListColumn) =>
+  sorted ?? (told && sql<SqlBool>`(${isRevealed(scope)} and ${told})`)
+
+export interface ListSlice {
+  filter: ListFilter
+  order: ListOrder
+  offset: number
+  limit: number
+}
+
 /**
- * The ids of one slice, in order. What has no value there, or none that the reader may see, comes last either way, by arrival; so
- * its place tells nothing. Without a filter an index is walked; with one the campaign's rows are read once, which costs the same
- * whatever the filter is.
+ * The ids of one slice of a table without a filter, or by arrival, in order: an index is walked. What has no value there, or none that
+ * the reader may see, comes last either way, by arrival; so its place tells nothing.
  */
 export async function listSlice(
   db: Kysely<DB>,
   scope: CandidateScope,
   table: ListedTable,
-  slice: { filter: ListFilter; order: ListOrder; offset: number; limit: number },
+  { filter, order, offset, limit }: ListSlice,
 ): Promise<number[]> {
-  const { filter, order, offset, limit } = slice
   const direction = order.descending ? 'desc' : 'asc'
   const rows = () => filtered(db, scope, table, filter).select('l.candidate_id as id')
   const column = order.column === null ? undefined : listColumns(scope, table)[order.column]
@@ -103,8 +112,9 @@ export async function listSlice(
     return ids.map(({ id }) => id)
   }
   const key = column.order ?? column.value
-  const { told, sorted: isSorted = told && sql<SqlBool>`(${isRevealed(scope)} and ${told})` } = column
-  const seen = isSorted ? sql<SqlBool>`(${isSorted} and ${key} is not null)` : sql<SqlBool>`${key} is not null`
+  const isSorted = sortedOf(scope, column)
+  const present = column.isAlwaysThere ? sql<SqlBool>`true` : sql<SqlBool>`${key} is not null`
+  const seen = isSorted ? sql<SqlBool>`(${isSorted} and ${present})` : present
   const countSeen = () => count(filtered(db, scope, table, filter).where(seen))
   // A grader's own are few: where the page lies behind them they need not be sorted.
   const known = isSorted && offset > 0 ? await countSeen() : null
@@ -113,7 +123,7 @@ export async function listSlice(
       ? []
       : await rows()
           .where(seen)
-          .orderBy(isFiltered(filter) || column.sorted ? sql`+${key}` : key, direction)
+          .orderBy(column.sorted ? sql`+${key}` : key, direction)
           .orderBy('l.candidate_id', direction)
           .limit(limit)
           .offset(offset)
@@ -128,6 +138,44 @@ export async function listSlice(
     .offset(Math.max(0, offset + ids.length - before))
     .execute()
   return [...ids, ...others.map(({ id }) => id)]
+}
+
+/**
+ * The same for a table with a filter, in one reading of the campaign's rows, which costs the same whatever the order.
+ * @returns how many pass on all pages; null behind the last page.
+ */
+export async function listFiltered(
+  db: Kysely<DB>,
+  scope: CandidateScope,
+  table: ListedTable,
+  { filter, order, offset, limit }: ListSlice,
+): Promise<{ ids: number[]; count: number | null }> {
+  const direction = order.descending ? 'desc' : 'asc'
+  const column = order.column === null ? undefined : listColumns(scope, table)[order.column]
+  const value = column ? (column.order ?? column.value) : sql`null`
+  const isSorted = column && sortedOf(scope, column)
+  const key = isSorted ? sql`iif(${isSorted}, ${value}, null)` : value
+  const rows = await db
+    .with(
+      (name) => name('passing').materialized(),
+      () => filtered(db, scope, table, filter).select(['l.candidate_id as id', key.as('key')]),
+    )
+    .selectFrom('passing')
+    .select([
+      'id',
+      (e) =>
+        e
+          .selectFrom('passing')
+          .select((all) => all.fn.countAll<number>().as('count'))
+          .as('count'),
+    ])
+    .orderBy(sql`key is null`)
+    .orderBy('key', direction)
+    .orderBy('id', direction)
+    .limit(limit)
+    .offset(offset)
+    .execute()
+  return { ids: rows.map(({ id }) => id), count: rows[0]?.count ?? null }
 }
 
 export async function countListed(
@@ -174,13 +222,16 @@ export async function listMeasuredIds(db: Kysely<DB>, campaignId: number): Promi
   return rows.map(({ id }) => id)
 }
 
-/** The entries that a grader may see and of which nobody has noted yet that they were shown. */
-export async function listEntriesNotShown(db: Kysely<DB>, scope: CandidateScope): Promise<number[]> {
-  const rows = await filtered(db, scope, 'catalogue', {})
-    .select('l.candidate_id as id')
-    .where(isNotShown(scope))
-    .execute()
-  return rows.map(({ id }) => id)
+/** How many entries a grader may see, and those of them of which nobody has noted yet that they were shown. */
+export async function listEntriesNotShown(
+  db: Kysely<DB>,
+  scope: CandidateScope,
+): Promise<{ all: number; notShown: number[] }> {
+  const row = await filtered(db, scope, 'catalogue', {})
+    .select((e) => e.fn.countAll<number>().as('all'))
+    .select(sql<string>`json_group_array(l.candidate_id) filter (where ${isNotShown(scope)})`.as('notShown'))
+    .executeTakeFirstOrThrow()
+  return { all: row.all, notShown: JSON.parse(row.notShown) as number[] }
 }
 
 const isNotShown = ({ judgedBy }: CandidateScope) =>

@@ -43,10 +43,11 @@ export async function catalogueTable(
 ): Promise<CatalogueTable> {
   const scope = candidateScope(permit)
   // Of each of their candidates the table tells whether it is in the catalogue, whatever page is looked at.
-  if (scope.judgedBy !== null) await noteShown(db, permit, await listEntriesNotShown(db, scope))
+  const own = scope.judgedBy === null ? null : await listEntriesNotShown(db, scope)
+  if (own) await noteShown(db, permit, own.notShown)
   const radii = await radiiFor(db, permit, input)
   const filter = listFilter(input.filter, radii)
-  const all = await countListed(db, scope, 'catalogue', {})
+  const all = own?.all ?? (await countListed(db, scope, 'catalogue', {}))
   const { ids, count } = await tableSlice(db, scope, 'catalogue', { ...input, filter, radii, all })
   const beside = await besideRows(db, permit, ids)
   const thumbnails = await thumbnailsOf(db, permit, ids)

@@ -4,10 +4,12 @@ import type { CandidateScope } from '@/db/queries/catalogue'
 import {
   countListed,
   isFiltered,
+  listFiltered,
   listMeasuredIds,
   listSlice,
   type ListedTable,
   type ListFilter,
+  type ListSlice,
 } from '@/db/queries/listing'
 import type { ColumnCondition } from '@/db/queries/list-conditions'
 import type { ListColumnName } from '@/db/queries/list-columns'
@@ -70,6 +72,10 @@ export async function tableSlice(
   const offset = page * pageSize
   const column = order === 'id' || order === 'einstein' ? null : order
   const slice = { filter, order: { column, descending }, offset, limit: pageSize }
+  if (order !== 'einstein' && isFiltered(filter)) {
+    const { ids, count } = await listFiltered(db, scope, table, slice)
+    return { ids, count: count ?? (offset === 0 ? 0 : await countListed(db, scope, table, filter)) }
+  }
   const ids =
     order === 'einstein' ? await byRadius(db, scope, table, slice, radii) : await listSlice(db, scope, table, slice)
   const isWhole = ids.length < pageSize && (ids.length > 0 || offset === 0)
@@ -82,7 +88,7 @@ async function byRadius(
   db: Kysely<DB>,
   scope: CandidateScope,
   table: ListedTable,
-  { filter, order, offset, limit }: Parameters<typeof listSlice>[3],
+  { filter, order, offset, limit }: ListSlice,
   radii: Radii,
 ): Promise<number[]> {
   const known = [...radii.keys()]
