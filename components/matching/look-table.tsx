@@ -4,13 +4,18 @@ import type { ListLook } from '@/lib/work/matching/read-list'
 const HEAD = 'border-b border-edge/60 px-2.5 py-1.5 text-left text-note font-normal text-mute'
 const CELL = 'figures border-b border-line px-2.5 py-1.5 text-note whitespace-nowrap'
 
-/** The first rows: what the file says, and what is read of it. */
+/** The first rows, and behind them those that something is wrong with: what the file says, and what is read of it. */
 export function LookTable({ look }: { look: ListLook }) {
   const { rows, format, mapping } = look
   const has = (of: (row: ListLook['rows'][number]) => boolean) => rows.some(of)
   const place = format === 'csv' ? 'Line' : 'Row'
   return (
-    <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="The first rows as they are read">
+    <div
+      className="relative overflow-x-auto"
+      tabIndex={0}
+      role="region"
+      aria-label="The first rows, and those at fault, as they are read"
+    >
       <table className="w-full border-collapse">
         <thead>
           <tr>

@@ -26,6 +26,7 @@ export interface CheckedPositions {
 export type AngleValues = ArrayLike<number | string | null>
 
 const SHOWN = 20
+const NAMED = 3
 
 /** How messages name rows: 'Line 7 has', '3 lines (the first is line 7) have'. */
 export interface RowNames {
@@ -97,7 +98,7 @@ export function checkPositions(
     const message = `${where(declinationsBeyond)} a declination beyond 90 degrees while no right ascension is above 90: the two columns are probably swapped.`
     add('swapped', declinationsBeyond, message)
   } else if (outside.count > 0) {
-    const message = `${where(outside)} a position off the sky: right ascension must be from 0 to 360 degrees and declination from -90 to 90.`
+    const message = `${where(outside)} a position off the sky (${outside.named(names, (k) => `${String(ra[k]).trim()}, ${String(dec[k]).trim()}`)}): right ascension must be from 0 to 360 degrees and declination from -90 to 90.`
     add('out-of-range', outside, message)
   }
   // On a sky of ten positions or more all within 24 degrees of RA and spread in declination, hours are the likelier reading.
@@ -142,6 +143,12 @@ class Rows {
   add(row: number): void {
     if (this.first.length < SHOWN) this.first.push(row)
     this.count++
+  }
+
+  /** 'row 7: 406.9, 94.5; row 9: …', of the first few. */
+  named({ one, numberOf }: RowNames, valuesOf: (row: number) => string): string {
+    const told = this.first.slice(0, NAMED).map((row) => `${one} ${numberOf(row)}: ${valuesOf(row)}`)
+    return [...told, ...(this.count > NAMED ? ['…'] : [])].join('; ')
   }
 
   /** 'Row 7 has', '3 rows (the first is row 7) have' */

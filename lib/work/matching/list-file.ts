@@ -39,6 +39,10 @@ export class ListFileError extends Error {
   readonly name = 'ListFileError'
 }
 
+/** A stray control character in a name is no reason to refuse a list. */
+const MOST_ODD_SHARE = 0.02
+const MOST_ODD_BYTES = 8
+
 const PIECE_BYTES = 262_144
 
 /**
@@ -72,6 +76,18 @@ function assertText(start: Uint8Array): void {
   if (begins('SIMPLE  =')) {
     throw new ListFileError(
       'The file is FITS. Save its table as CSV or VOTable, for instance with stilts tpipe ofmt=csv.',
+    )
+  }
+  assertPlain(start)
+}
+
+/** Bytes that no text has: of the control characters all but tab, line ends and form feed. In UTF-16 every second byte is 0. */
+function assertPlain(start: Uint8Array): void {
+  const isWide = (start[0] === 0xff && start[1] === 0xfe) || (start[0] === 0xfe && start[1] === 0xff) || start[1] === 0
+  const odd = start.filter((byte) => (byte < 0x20 && ![9, 10, 12, 13].includes(byte)) || byte === 0x7f).length
+  if (!isWide && odd > Math.max(MOST_ODD_BYTES, start.length * MOST_ODD_SHARE)) {
+    throw new ListFileError(
+      'The file is no text, so it is neither CSV nor VOTable. Save the table as one of them and send that.',
     )
   }
 }
@@ -176,6 +192,11 @@ async function csv(path: string, limitBytes: number): Promise<ListFile> {
       'The file has only one column. Separate the columns with commas, semicolons or tabs, or save it as VOTable.',
     )
   }
+  if (!isHeader && !head.fields.every((field) => field.trim() === '' || isNumber(field))) {
+    faults.sentences.push(
+      `Line ${head.line} holds values where the names of the columns are expected: it is read as a row, and the columns are numbered.`,
+    )
+  }
   const rest = isHeader ? first : [head, ...first]
   const columns = names.map((name, column) => ({
     name,
@@ -211,13 +232,17 @@ async function* once<T>(source: AsyncGenerator<T>): AsyncGenerator<T> {
 
 const isComment = (fields: readonly string[]) => fields[0]?.trimStart().startsWith('#') ?? false
 
+/** A number with a fraction or a sexagesimal angle. A name of a column can be a whole number, as of a year, but hardly two of these. */
+const looksLikeValue = (field: string): boolean =>
+  /^\s*[+\-\u2212]?(\d+[.]\d+|[.]\d+|\d{1,3}[\s:hd°]\s*\d{1,2}[\s:m'′]\s*\d{1,2}([.]\d*)?["″s]?)\s*$/.test(field)
+
 /** The names, from the line itself, from a comment above it, or as numbers where there are none. */
 function headerOf(
   comment: readonly string[] | undefined,
   line: readonly string[],
 ): { names: string[]; isHeader: boolean } {
-  if (!line.every((field) => field.trim() === '' || isNumber(field)))
-    return { names: uniqueNames(line), isHeader: true }
+  const isAllNumbers = line.every((field) => field.trim() === '' || isNumber(field))
+  if (!isAllNumbers && line.filter(looksLikeValue).length < 2) return { names: uniqueNames(line), isHeader: true }
   const told =
     comment?.length === line.length
       ? comment.map((field, place) => (place === 0 ? field.replace(/^\s*#\s*/, '') : field))

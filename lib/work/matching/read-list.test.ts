@@ -67,6 +67,39 @@ describe('a look at a list', () => {
     expect(sentences(bare.findings)).toMatch(/Choose the column of the right ascension/)
   })
 
+  it('reads a first line of values as a row and says so, but takes names with numbers in them for names', async () => {
+    const { rows, columns, findings, looked } = await lookAt('Curlew Arc 0,8.35,-2.67,0.5\nCurlew Arc 1,8.4,-2.7,0.6\n')
+    expect(columns.map(({ name }) => name)).toEqual(['column 1', 'column 2', 'column 3', 'column 4'])
+    expect([rows[0].row, looked]).toEqual([1, 2])
+    expect(sentences(findings)).toMatch(/Line 1 holds values where the names .* read as a row/)
+    expect((await lookAt('K1,10:00:00,-01:30:00\nK2,10:00:01,-01:30:00\n')).looked).toBe(2)
+    const named = await lookAt('name,2015,2016,ra,dec\nx,1,2,3,4\n')
+    expect(named.columns[1].name).toBe('2015')
+    expect(sentences(named.findings)).not.toMatch(/holds values/)
+  })
+
+  it('refuses bytes that are no text, and takes UTF-16 and a stray control character', async () => {
+    const noise = fileOf(Uint8Array.from({ length: 5000 }, (_, k) => (k * 7 + 44) % 256))
+    expect(await look({ ...noise, mapping: null })).toEqual({
+      fault: expect.stringMatching(/no text.*neither CSV nor VOTable/),
+    })
+    const wide = fileOf(new Uint8Array(Buffer.from('\ufeffname,ra,dec\nx,1,2\n', 'utf16le')))
+    expect(await look({ ...wide, mapping: null })).toMatchObject({ looked: 1 })
+    expect((await lookAt(`name,ra,dec\nx\u0002y,1,2\n${'plain row,3,4\n'.repeat(20)}`)).looked).toBe(21)
+  })
+
+  it('shows the first rows that are at fault too, wherever they lie, and their values', async () => {
+    const good = Array.from({ length: 30 }, (_, k) => `G${k},${k + 100},1`)
+    const { rows, findings } = await lookAt(['name,ra,dec', ...good, 'B1,406.9,2', 'B2,10,94.5', 'B3,,', ''].join('\n'))
+    expect(rows).toHaveLength(15)
+    expect(rows.slice(12).map(({ row, raDeg }) => [row, raDeg])).toEqual([
+      [32, null],
+      [33, null],
+      [34, null],
+    ])
+    expect(sentences(findings)).toContain('off the sky (line 32: 406.9, 2; line 33: 10, 94.5)')
+  })
+
   it('turns galactic and FK5 positions to ICRS', async () => {
     // astropy 5.2.1: SkyCoord(l, b, unit='deg', frame='galactic').icrs and SkyCoord(10, 20, unit='deg', frame='fk5').icrs
     const { mapping, rows } = await lookAt('glon,glat\n0,0\n120.5,-33.25\n')

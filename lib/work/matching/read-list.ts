@@ -26,7 +26,7 @@ export interface ListLook {
   format: 'csv' | 'votable'
   columns: ListColumn[]
   mapping: ListMapping
-  /** The first rows: what the file says of their place, and what is read. */
+  /** The first rows, and behind them the first of those that are at fault: what the file says of their place, and what is read. */
   rows: (ReadRow & { raText: string; decText: string })[]
   /** Rows that were looked at, and whether they are all. */
   looked: number
@@ -44,6 +44,8 @@ export type ListRead = { refused: Finding[] } | { rows: number; positions: numbe
 
 const LOOK_BYTES = 4 * 1024 * 1024
 const SHOWN_ROWS = 12
+/** Behind the first rows, of those that findings are about. */
+const SHOWN_FAULTY = 12
 const ROWS_PER_PART = 1000
 const LONGEST_TEXT = 300
 
@@ -58,10 +60,11 @@ export async function lookAtList(path: string, bytes: number, chosen: ListMappin
   const rows: ListRow[] = []
   for await (const batch of file.batches) rows.push(...batch)
   const place = missing.length > 0 ? null : placesOf(file, mapping, rows)
-  const shown = rows.slice(0, SHOWN_ROWS).map((row, index) => ({
-    ...readRow(file, mapping, row, place?.positions ?? null, index),
-    raText: textAt(file, row, mapping.ra),
-    decText: textAt(file, row, mapping.dec),
+  const atFault = (place?.faulty ?? []).filter((index) => index >= SHOWN_ROWS).slice(0, SHOWN_FAULTY)
+  const shown = [...rows.slice(0, SHOWN_ROWS).keys(), ...atFault].map((index) => ({
+    ...readRow(file, mapping, rows[index], place?.positions ?? null, index),
+    raText: textAt(file, rows[index], mapping.ra),
+    decText: textAt(file, rows[index], mapping.dec),
   }))
   return {
     format: file.format,
@@ -165,7 +168,7 @@ function checked(
   file: ListFile,
   mapping: ListMapping,
   { numbers, ra, dec }: RawPlaces,
-): { positions: Positions; usable: number; findings: Finding[] } {
+): { positions: Positions; usable: number; findings: Finding[]; faulty: number[] } {
   const names: RowNames =
     file.format === 'csv'
       ? { one: 'line', many: 'lines', numberOf: (place) => numbers[place] }
@@ -178,7 +181,9 @@ function checked(
     .map((problem) => ({ sentence: inFrame(adviceFor(problem), isGalactic), stops: problem.kind !== 'missing' }))
   if (usable === 0)
     findings.push({ sentence: 'No row has a position that can be used; nothing would match.', stops: true })
-  return { positions: inIcrs(positions, mapping.frame), usable, findings }
+  const rowsAtFault = problems.flatMap(({ kind, rows }) => (kind === 'hours' ? [] : rows))
+  const faulty = [...new Set(rowsAtFault)].sort((a, b) => a - b)
+  return { positions: inIcrs(positions, mapping.frame), usable, findings, faulty }
 }
 
 function adviceFor({ kind, message }: PositionProblem): string {
