@@ -213,24 +213,25 @@ export async function insertDecision(db: Kysely<DB>, { about, ...decision }: New
 export interface OtherCampaignMatch {
   candidateId: number
   otherId: number
-  /** null: not told, to a grader there. */
-  name: string | null
+  name: string
   campaign: string
   slug: string
   separationArcsec: number
 }
 
-/** Candidates of other campaigns at the places of these, as far as the person is a member there. */
+/**
+ * Candidates of other campaigns at the places of these, as far as the person is a member there. A grader there is told those that they
+ * have judged and that are decided: what is missing at a place would else tell a calibration stamp, which matches nothing.
+ */
 export async function listOtherCampaignMatches(
   db: Kysely<DB>,
   personId: number,
   candidateIds: readonly number[],
 ): Promise<OtherCampaignMatch[]> {
-  const isNamed = sql<SqlBool>`exists (select 1 from judged where judged.campaign_id = campaign.id
-    and judged.person_id = ${personId} and judged.candidate_id = other.id)`
+  const isTold = sql<SqlBool>`other.state in ('confirmed', 'set aside') and exists (select 1 from judged
+    where judged.campaign_id = campaign.id and judged.person_id = ${personId} and judged.candidate_id = other.id)`
   const side = (own: 'first' | 'second', other: 'first' | 'second') => sql<OtherCampaignMatch>`
-    select m.${sql.raw(own)}_id as candidateId, other.id as otherId,
-      iif(membership.role <> 'grader' or ${isNamed}, other.name, null) as name, campaign.name as campaign, campaign.slug,
+    select m.${sql.raw(own)}_id as candidateId, other.id as otherId, other.name, campaign.name as campaign, campaign.slug,
       m.separation_arcsec as separationArcsec
     from candidate_match m join candidate other on other.id = m.${sql.raw(other)}_id
       join campaign on campaign.id = m.${sql.raw(other)}_campaign_id
@@ -238,7 +239,7 @@ export async function listOtherCampaignMatches(
       join membership on membership.campaign_id = campaign.id and membership.person_id = ${personId}
         and membership.ended_at is null
     where m.${sql.raw(own)}_id in ${among(candidateIds)} and m.first_campaign_id <> m.second_campaign_id
-      and m.separation_arcsec <= own.match_radius_arcsec`
+      and m.separation_arcsec <= own.match_radius_arcsec and (membership.role <> 'grader' or ${isTold})`
   const { rows } = await sql<OtherCampaignMatch>`${side('first', 'second')} union all ${side('second', 'first')}
     order by separationArcsec`.execute(db)
   return rows

@@ -11,7 +11,6 @@ import {
 } from '@/db/queries/merges'
 import type { DB } from '@/db/schema'
 import type { IsoTime } from '@/db/schema/values'
-import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { candidateEvidence, type Judgement } from '@/lib/work/rulings/candidate-evidence'
 import { toldOf } from './known-labels'
@@ -41,8 +40,8 @@ export interface OtherHistory {
 export interface CandidateMatches {
   /** Nearest first. Only leads are told those that a lead has found to differ. */
   objects: ObjectMatchRow[]
-  /** In other campaigns that the person is a member of. */
-  elsewhere: (OtherCampaignMatch & { name: string })[]
+  /** In other campaigns that the person is a member of; as a grader there, those judged by them and decided. */
+  elsewhere: OtherCampaignMatch[]
   /** In the same campaign; not told to graders. */
   near: DuplicateOf[]
   merges: ToldMerge[]
@@ -76,10 +75,7 @@ export async function candidateMatches(
   }
   return {
     objects: objects.filter(({ decision }) => role === 'lead' || decision !== 'different'),
-    elsewhere: (await listOtherCampaignMatches(db, viewer.id, [candidateId])).map((one) => ({
-      ...one,
-      name: one.name ?? candidateNumber(one.otherId),
-    })),
+    elsewhere: await listOtherCampaignMatches(db, viewer.id, [candidateId]),
     near: role === 'grader' ? [] : await listDuplicatesOf(db, campaign.id, candidateId, campaign.match_radius_arcsec),
     merges,
     histories,

@@ -3,6 +3,7 @@ import { giveGrades } from '@/lib/work/consensus/_give-grade'
 import { runConsensus } from '@/lib/work/consensus/run-consensus'
 import { keptOutOfNew, knownIn } from '@/db/queries/matching'
 import { candidateEvidence } from '@/lib/work/rulings/candidate-evidence'
+import { permitCampaign } from '@/lib/work/people/permission'
 import { addImagedCandidate, addMember } from '@/tests/_support/scenario'
 import { addList, closeScenario, match } from './_matching-scenario'
 import { candidateMatches } from './candidate-matches'
@@ -84,6 +85,40 @@ describe('the same place in another campaign', () => {
       .execute()
     expect(await seen(lead)).toEqual([])
     expect(campaign.id).not.toBe(otherCampaign.id)
+    await db.destroy()
+  })
+
+  it('tells somebody who grades there only what they have judged and what is decided, so that no stamp is missing', async () => {
+    const { db, campaign, otherCampaign, lead, graders, permit, a, b } = await closeScenario()
+    await addMember(db, otherCampaign, graders[0], 'lead', 'S07')
+    const leads = await permit(lead, 'lead')
+    const there = await permitCampaign(db, graders[0], otherCampaign.slug, 'read')
+    const atA = await addImagedCandidate(db, otherCampaign, 'South 1', { raDeg: 150, decDeg: 0 })
+    const atStamp = await addImagedCandidate(db, otherCampaign, 'South 2', { raDeg: 151, decDeg: 0 })
+    const stamp = await addImagedCandidate(db, campaign, 'SWS stamp', { raDeg: 151, decDeg: 0 })
+    await db.updateTable('candidate').set({ truth: 'lens' }).where('id', '=', stamp).execute()
+    await match(db, campaign.id)
+    await match(db, otherCampaign.id)
+    const seen = async (id: number) => (await candidateMatches(db, there, id))?.elsewhere.map(({ name }) => name)
+    expect([await seen(atA), await seen(atStamp)]).toEqual([[], []])
+    // Judged, and still open, as the stamp stays for ever.
+    await giveGrades(db, campaign, a, graders, 'A')
+    await giveGrades(db, campaign, stamp, graders, 'A')
+    expect([await seen(atA), await seen(atStamp)]).toEqual([[], []])
+    await giveGrades(db, campaign, b, graders.slice(1), 'NNN')
+    await giveGrades(db, campaign, a, graders.slice(1), 'AAA')
+    await runConsensus(db, leads)
+    expect([await seen(atA), await seen(atStamp)]).toEqual([['SWS A'], []])
+    await db.destroy()
+  })
+
+  it('goes by the radius of the own campaign, though that of the other is wider', async () => {
+    const { db, otherCampaign, lead, permit, a } = await closeScenario()
+    await db.updateTable('campaign').set({ match_radius_arcsec: 60 }).where('id', '=', otherCampaign.id).execute()
+    await addImagedCandidate(db, otherCampaign, 'South 1', { raDeg: 150 - 30 / 3600, decDeg: 0 })
+    await match(db, otherCampaign.id)
+    await addMember(db, otherCampaign, lead, 'viewer', 'S07')
+    expect((await candidateMatches(db, await permit(lead, 'read'), a))?.elsewhere).toEqual([])
     await db.destroy()
   })
 })
