@@ -80,6 +80,21 @@ describe('its uncertainty', () => {
     expect(mass.criticalDensityKgM2.low).toBe(mass.criticalDensityKgM2.high)
   })
 
+  it('begins at 0, holds its value and says so where the radius is not measured to better than itself', () => {
+    const { velocityDispersionKmS, massSolar, radiusKpc, notes } = einsteinMass({
+      ...exact(5, 0.4, 1.8),
+      radiusErrorArcsec: 99,
+    })
+    for (const { value, low, high } of [velocityDispersionKmS, massSolar, radiusKpc]) {
+      expect(low).toBe(0)
+      expect(high).toBeGreaterThan(value)
+    }
+    // One sigma above: the dispersion goes as the root of the radius.
+    expect(velocityDispersionKmS.high / velocityDispersionKmS.value).toBeCloseTo(Math.sqrt(104 / 5), 1)
+    expect(notes[0]).toMatch(/error of the radius is larger than the radius/)
+    expect(einsteinMass({ ...exact(5, 0.4, 1.8), radiusErrorArcsec: 1 }).notes).toEqual([])
+  })
+
   it('of a redshift alone is the formula at that redshift plus and minus 1 sigma', () => {
     const request = { ...exact(1.5, 0.4, 1.5), sourceRedshift: { value: 1.5, error: 0.1 } }
     const mass = einsteinMass(request)
@@ -109,6 +124,44 @@ describe('its uncertainty', () => {
     expect(mass.sourceRedshift).toBe(2)
     expect(mass.isAssumed).toBe(true)
     expect(mass.notes[0]).toContain('The redshift of the source is an assumed range')
+  })
+
+  // astropy 5.2.1 FlatLambdaCDM(70, 0.3), numpy quantiles of 400,000 normal draws of the radius, those below 0 set to 0.
+  it.each([
+    { radius: 5, error: 99, sigma: [504.24, 2299.8], mass: [4.9893e12, 2.159e15], kpc: [26.865, 558.83] },
+    { radius: 2.2, error: 3.9, sigma: [334.47, 556.9], mass: [9.6593e11, 7.4233e12], kpc: [11.82, 32.769] },
+  ])('of a radius $radius ± $error holds the value and begins at 0', ({ radius, error, sigma, mass, kpc }) => {
+    const found = einsteinMass({ ...exact(radius, 0.4, 1.8), radiusErrorArcsec: error })
+    for (const [{ value, low, high }, [expected, end]] of [
+      [found.velocityDispersionKmS, sigma],
+      [found.massSolar, mass],
+      [found.radiusKpc, kpc],
+    ] as const) {
+      expect(low).toBe(0)
+      expect(relativeError(value, expected)).toBeLessThan(1e-4)
+      expect(relativeError(high, end)).toBeLessThan(0.01)
+    }
+    expect(found.notes.join(' ')).toContain('how much there is at most')
+    expect(einsteinMass({ ...exact(radius, 0.4, 1.8), radiusErrorArcsec: radius / 2 }).notes).toEqual([])
+  })
+
+  // The same, 400,000 uniform draws of both redshifts with the source behind the lens; at 2 and 2.15 the mass would be 1.2281e13.
+  it('of ranges whose middle is rare has the median in it, and says so', () => {
+    const ranges = { lensRedshift: { low: 1, high: 3 }, sourceRedshift: { low: 1.1, high: 3.2 } }
+    const { massSolar, notes } = einsteinMass({ ...exact(1.5, 2, 2.15), ...ranges })
+    expect(relativeError(massSolar.low, 1.4556e12)).toBeLessThan(0.03)
+    expect(relativeError(massSolar.value, 2.8917e12)).toBeLessThan(0.03)
+    expect(relativeError(massSolar.high, 9.6057e12)).toBeLessThan(0.06)
+    expect(notes.join(' ')).toContain('is the median')
+  })
+
+  it('of ranges as people assume them is that of 400,000 draws', () => {
+    const ranges = { lensRedshift: { low: 0.2, high: 0.8 }, sourceRedshift: { low: 1, high: 3 } }
+    const { velocityDispersionKmS: sigma, notes } = einsteinMass({ ...exact(2.16, 0.5, 2), ...ranges })
+    expect(relativeError(sigma.value, 343.33)).toBeLessThan(1e-4)
+    expect(relativeError(sigma.low, 312.11)).toBeLessThan(0.005)
+    expect(relativeError(sigma.high, 393.84)).toBeLessThan(0.005)
+    expect(notes.join(' ')).not.toContain('median')
   })
 
   it('leaves out redshifts with the source before the lens and says how many', () => {

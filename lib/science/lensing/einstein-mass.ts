@@ -6,7 +6,8 @@
  *
  * Errors: each input is replaced by values of equal probability (middle of its n equal parts), all combinations are evaluated, and
  * the interval holds the middle 68.27 % of them. It is not drawn at random, so that one input has one answer; no linear
- * approximation, so that wide ranges of redshift give the uneven intervals that they should.
+ * approximation, so that wide ranges of redshift give the uneven intervals that they should. A radius below 0 stands for 0: where the
+ * error is as large as the radius the interval begins there, instead of leaving out the half of it that lies below.
  */
 import { normalQuantile } from '@/lib/science/agreement/quantiles'
 import { PARSEC_M, RADIANS_PER_ARCSEC, SOLAR_MASS_PARAMETER_M3_S2, SPEED_OF_LIGHT_KM_S } from './constants'
@@ -26,9 +27,9 @@ export interface EinsteinMassRequest {
 }
 
 export interface Interval {
-  /** at the central values of the inputs */
+  /** at the central values of the inputs, or the median where those are rarer than what is left of wide ranges; from low to high */
   value: number
-  /** ends of the middle 68.27 % */
+  /** ends of the middle 68.27 %; a low of 0 says that only the high end is measured */
   low: number
   high: number
 }
@@ -77,20 +78,27 @@ export function einsteinMass(request: EinsteinMassRequest): EinsteinMass {
       `The source (redshift ${source.centre}) must lie behind the lens (redshift ${lens.centre}); check which is which.`,
     )
   }
-  const radii = radiusErrorArcsec === 0 ? [radiusArcsec] : normalValues(radiusArcsec, radiusErrorArcsec, RADIUS_PARTS)
-  const usableRadii = radii.filter((radius) => radius > 0)
+  const radii = (
+    radiusErrorArcsec === 0 ? [radiusArcsec] : normalValues(radiusArcsec, radiusErrorArcsec, RADIUS_PARTS)
+  ).map((radius) => Math.max(0, radius))
   const central = geometryOf(cosmology, lens.centre, source.centre)
   const { geometries, leftOutShare } = geometriesOf(cosmology, lens.values, source.values)
+  let isMedian = false
   const interval = (of: (radius: number, geometry: Geometry) => number): Interval => {
-    const all = new Float64Array(geometries.length * usableRadii.length)
+    const all = new Float64Array(geometries.length * radii.length)
     let count = 0
-    for (const geometry of geometries) for (const radius of usableRadii) all[count++] = of(radius, geometry)
+    for (const geometry of geometries) for (const radius of radii) all[count++] = of(radius, geometry)
     all.sort()
-    return {
-      value: of(radiusArcsec, central),
-      low: quantileOf(all, (1 - MIDDLE) / 2),
-      high: quantileOf(all, (1 + MIDDLE) / 2),
+    const [low, high] = [quantileOf(all, (1 - MIDDLE) / 2), quantileOf(all, (1 + MIDDLE) / 2)]
+    const value = of(radiusArcsec, central)
+    // One value and its interval of one differ in their last bits.
+    if (geometries.length * radii.length === 1) return { value, low: value, high: value }
+    const slack = 1e-12 * value
+    if (value >= low - slack && value <= high + slack) {
+      return { value, low: Math.min(low, value), high: Math.max(high, value) }
     }
+    isMedian = true
+    return { value: quantileOf(all, 0.5), low, high }
   }
   const density = interval((_, geometry) => geometry.criticalDensityKgM2)
   const perPc2 = PARSEC_M ** 2 / SOLAR_MASS_KG
@@ -119,9 +127,21 @@ export function einsteinMass(request: EinsteinMassRequest): EinsteinMass {
       lensRedshift: lens.centre,
       sourceRedshift: source.centre,
     }),
-    notes: notesOn(lens.isRange, source.isRange, leftOutShare),
+    notes: [
+      ...notesOnRadius(radiusArcsec, radiusErrorArcsec),
+      ...notesOn(lens.isRange, source.isRange, leftOutShare),
+      ...(isMedian ? [MEDIANS] : []),
+    ],
   }
 }
+
+const MEDIANS =
+  'In the middle of these redshifts lens and source are unusually near each other; what would lie beside its own range is the median.'
+
+const notesOnRadius = (radiusArcsec: number, errorArcsec: number): string[] =>
+  errorArcsec > radiusArcsec
+    ? ['The error of the radius is larger than the radius: it says how much there is at most, not how much there is.']
+    : []
 
 /** Mass only follows through GM, which is known better than either: the kilogram needs G, CODATA 2018, good to 2e-5. */
 const GRAVITATION = 6.6743e-11

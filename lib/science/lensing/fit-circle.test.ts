@@ -284,13 +284,28 @@ describe('several radii', () => {
     expect(combined?.notes.join(' ')).toContain('Measurement 4')
   })
 
-  it('count alike where an error is missing', () => {
-    const combined = combineRadii([
-      { radiusArcsec: 1, errorArcsec: 0.01 },
-      { radiusArcsec: 2, errorArcsec: null },
-    ])
+  it('count alike where nobody has an error, with the error of the mean from their scatter', () => {
+    const combined = combineRadii([1, 2].map((radiusArcsec) => ({ radiusArcsec, errorArcsec: null })))
     expect(combined).toMatchObject({ radiusArcsec: 1.5, isWeighted: false })
     expect(combined?.errorArcsec).toBeCloseTo(0.5, 12)
+    expect(combined?.notes).toEqual(['Nobody’s error is known, so that all count alike.'])
+  })
+
+  it('without errors that are alike have no error instead of none at all', () => {
+    const alike = [1.2, 1.2, 1.2].map((radiusArcsec) => ({ radiusArcsec, errorArcsec: null }))
+    expect(combineRadii(alike)).toMatchObject({ errorArcsec: null })
+    expect(combineRadii(alike.slice(1))).toMatchObject({ radiusArcsec: 1.2, errorArcsec: null })
+  })
+
+  // By hand: equal weights, mean 1.2, chi^2 = 0.5 of 2, error 0.02 / sqrt(3).
+  it('with errors are not moved by one without, which is shown, counted and said to lie apart', () => {
+    const measured = [1.2, 1.21, 1.19].map((radiusArcsec) => ({ radiusArcsec, errorArcsec: 0.02 }))
+    const combined = combineRadii([...measured, { radiusArcsec: 3, errorArcsec: null }])
+    expect(combined?.radiusArcsec).toBeCloseTo(1.2, 12)
+    expect(combined?.errorArcsec).toBeCloseTo(0.02 / Math.sqrt(3), 12)
+    expect(combined).toMatchObject({ count: 4, largestArcsec: 3, apart: [3], scaleFactor: 1, isWeighted: true })
+    expect(combined?.notes[0]).toBe('One measurement without an error is shown and not in the value.')
+    expect(combineRadii([...measured, { radiusArcsec: 1.22, errorArcsec: null }])?.apart).toEqual([])
   })
 
   it('of one person say that the scatter is not known', () => {
