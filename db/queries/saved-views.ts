@@ -5,7 +5,11 @@ import type { IsoTime } from '../schema/values'
 
 type Page = SavedViewTable['page']
 
-export type SavedViewRow = SavedView & { by: string }
+export interface SavedViewRow extends SavedView {
+  by: string
+  /** Of whoever saved it, in the campaign; null for a former member. */
+  pseudonym: string | null
+}
 
 /** A person's own views of a page, and those that members who lead the campaign now have shared; in the order of their names. */
 export async function listSavedViews(
@@ -17,8 +21,13 @@ export async function listSavedViews(
   return db
     .selectFrom('saved_view')
     .innerJoin('person', 'person.id', 'saved_view.person_id')
+    .leftJoin('membership', (join) =>
+      join
+        .onRef('membership.person_id', '=', 'saved_view.person_id')
+        .onRef('membership.campaign_id', '=', 'saved_view.campaign_id'),
+    )
     .selectAll('saved_view')
-    .select('person.name as by')
+    .select(['person.name as by', 'membership.pseudonym'])
     .where('saved_view.campaign_id', '=', campaignId)
     .where('saved_view.page', '=', page)
     .where((e) =>

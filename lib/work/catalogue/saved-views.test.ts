@@ -32,7 +32,7 @@ it('keeps a table under a name, for the person and the page that it is of', asyn
   expect(await views(other)).toMatchObject({ own: [], shared: [], mayShare: false })
 })
 
-it('shares what a lead shares with every member, under the lead’s name', async () => {
+it('shares what a lead shares with every member, under the lead’s pseudonym, and to leads the name', async () => {
   await save(scenario.lead, 'Splits first', { shared: true })
   await save(scenario.lead, 'My own', {})
   expect(await views(scenario.lead)).toMatchObject({
@@ -44,8 +44,14 @@ it('shares what a lead shares with every member, under the lead’s name', async
     mayShare: true,
   })
   for (const viewer of [scenario.graders[0], scenario.reader]) {
-    expect(await views(viewer)).toMatchObject({ own: [], shared: [{ name: 'Splits first', by: 'avocet' }] })
+    expect(await views(viewer)).toMatchObject({ own: [], shared: [{ name: 'Splits first', by: 'G01' }] })
   }
+  await addMember(scenario.db, scenario.campaign, scenario.stranger, 'lead', 'G77')
+  expect((await views(scenario.stranger)).shared).toMatchObject([{ name: 'Splits first', by: 'avocet' }])
+})
+
+it('shares nothing with strangers', async () => {
+  await save(scenario.lead, 'Splits first', { shared: true })
   await expect(views(scenario.stranger)).rejects.toMatchObject({ status: 404 })
 })
 

@@ -23,7 +23,7 @@ export interface SavedViewShown {
   /** The query of the table's address. */
   query: string
   shared: boolean
-  /** Who saved it, where that is somebody else. */
+  /** Who saved it, where that is somebody else: the name for leads, the pseudonym for everybody else. */
   by: string | null
 }
 
@@ -57,7 +57,8 @@ export async function savedViews(db: Kysely<DB>, permit: CampaignPermit<'read'>,
   const { campaign, viewer, role } = permit
   const rows = await listSavedViews(db, campaign.id, page, viewer.id)
   const shown = (row: (typeof rows)[number]): SavedViewShown => {
-    const { id, name, query, shared, by, person_id } = row
+    const { id, name, query, shared, person_id } = row
+    const by = role === 'lead' ? row.by : (row.pseudonym ?? 'a lead')
     return { id, name, query, shared: shared === 1, by: person_id === viewer.id ? null : by }
   }
   return {
