@@ -114,7 +114,9 @@ export async function listUnmatchedLists(
   campaignId: number,
 ): Promise<{ name: string; state: ListState; hasFailed: boolean }[]> {
   const { rows } = await sql<{ name: string; state: ListState; hasFailed: 0 | 1 }>`
-    select l.name, l.state, max(ifnull(job.state = 'failed', 0)) as hasFailed
+    select l.name, l.state, max(case l.state when 'ready' then job.state = 'failed' else not exists (
+        select 1 from job reading where reading.campaign_id = l.campaign_id and reading.kind = 'read-list'
+          and reading.state in ('queued', 'running') and json_extract(reading.payload, '$.listId') = l.id) end) as hasFailed
       from reference_list l left join job on job.campaign_id = l.campaign_id and job.state <> 'done'
         and job.kind = 'match-list' and json_extract(job.payload, '$.listId') = l.id
         and not exists (select 1 from job later where later.campaign_id = l.campaign_id and later.kind = 'match-list'

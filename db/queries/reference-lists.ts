@@ -17,6 +17,19 @@ export async function findListById(db: Kysely<DB>, listId: number): Promise<Refe
   return (await db.selectFrom('reference_list').selectAll().where('id', '=', listId).executeTakeFirst()) ?? null
 }
 
+/** Whether a job still has to read the list, or does. */
+export async function isBeingRead(db: Kysely<DB>, list: { id: number; campaign_id: number }): Promise<boolean> {
+  const row = await db
+    .selectFrom('job')
+    .select('id')
+    .where('campaign_id', '=', list.campaign_id)
+    .where('kind', '=', 'read-list')
+    .where('state', 'in', ['queued', 'running'])
+    .where(sql<number>`json_extract(payload, '$.listId')`, '=', list.id)
+    .executeTakeFirst()
+  return row !== undefined
+}
+
 export async function findListOfFile(db: Kysely<DB>, campaignId: number, sha256: string): Promise<number | null> {
   const row = await db
     .selectFrom('reference_list')

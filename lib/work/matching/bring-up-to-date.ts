@@ -32,10 +32,18 @@ export async function bringUpToDate(db: Kysely<DB>, campaignId: number): Promise
 export async function isUpToDate(db: Kysely<DB>, campaignId: number): Promise<boolean> {
   const [list] = await listUnmatchedLists(db, campaignId)
   if (list) {
-    const what = list.hasFailed
-      ? `Candidates could not be compared with the known objects of ${list.name}. Change its radius so that it is tried again, or retire it; then publish.`
-      : `The known objects of ${list.name} are still being ${list.state === 'reading' ? 'read' : 'compared with the candidates'}. Publish when that is done.`
-    throw conflict('being-matched', what)
+    throw conflict('being-matched', whyNot(list))
   }
   return (await countDue(db, campaignId)) === 0
+}
+
+function whyNot({ name, state, hasFailed }: { name: string; state: string; hasFailed: boolean }): string {
+  if (state === 'reading') {
+    return hasFailed
+      ? `The list ${name} was not read to its end. Take it in again, or retire it; then publish.`
+      : `The known objects of ${name} are still being read. Publish when that is done.`
+  }
+  return hasFailed
+    ? `Candidates could not be compared with the known objects of ${name}. Change its radius so that it is tried again, or retire it; then publish.`
+    : `The known objects of ${name} are still being compared with the candidates. Publish when that is done.`
 }

@@ -1,7 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { insertAllDue } from '@/db/queries/matching'
-import { findList, setMatchRadius, updateList } from '@/db/queries/reference-lists'
+import { findList, isBeingRead, setMatchRadius, updateList } from '@/db/queries/reference-lists'
 import type { DB } from '@/db/schema'
 import type { ListMapping, ReferenceList } from '@/db/schema/matching'
 import { toJson } from '@/db/schema/values'
@@ -16,10 +16,11 @@ import type { ListDetails } from './list-details'
 
 type Lead = CampaignPermit<'lead'>
 
+/** One whose reading was given up (the server went down each time) can be taken in again or retired. */
 async function requireList(db: Kysely<DB>, permit: Lead, listId: number): Promise<ReferenceList> {
   const list = await findList(db, permit.campaign.id, listId)
   if (!list) throw notFound('list')
-  if (list.state === 'reading') {
+  if (list.state === 'reading' && (await isBeingRead(db, list))) {
     throw conflict('being-read', `${list.name} is being read. Wait until it is there, then change it.`)
   }
   return list
@@ -61,7 +62,7 @@ export async function takeInList(
       throw conflict('retired', `${list.name} is retired. Bring it back before it is read again.`)
     }
     const change = { ...columnsOf(details), mapping: toJson(mapping), state: 'reading', reason: null } as const
-    await updateList(transaction, listId, ['draft', 'refused', 'ready'], { ...change, state_since: now })
+    await updateList(transaction, listId, ['draft', 'refused', 'ready', 'reading'], { ...change, state_since: now })
     const uniqueKey = `${JOB.readList}:${listId}`
     const campaignId = permit.campaign.id
     await enqueueJob(transaction, { kind: JOB.readList, campaignId, uniqueKey, payload: { listId } })
@@ -84,9 +85,11 @@ export async function changeList(db: Kysely<DB>, permit: Lead, listId: number, d
 /** A retired list labels nothing; it and its rows stay. */
 export async function retireList(db: Kysely<DB>, permit: Lead, listId: number): Promise<{ name: string }> {
   return db.transaction().execute(async (transaction) => {
-    const { name } = await requireList(transaction, permit, listId)
-    const change = { state: 'retired', state_since: isoTime() } as const
-    if (!(await updateList(transaction, listId, ['draft', 'refused', 'ready'], change))) {
+    const { name, state } = await requireList(transaction, permit, listId)
+    // Of what was read in part nothing counts: it comes back as a draft.
+    const unread = state === 'reading' ? { rows: 0, positions: 0 } : {}
+    const change = { state: 'retired', state_since: isoTime(), ...unread } as const
+    if (!(await updateList(transaction, listId, ['draft', 'refused', 'ready', 'reading'], change))) {
       throw conflict('retired', `${name} is retired already.`)
     }
     await record(transaction, permit, 'matching.list-retired', name, { list: listId })

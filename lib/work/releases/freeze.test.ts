@@ -2,14 +2,17 @@ import { mkdir, writeFile } from 'node:fs/promises'
 import path from 'node:path'
 import { sql } from 'kysely'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { findList } from '@/db/queries/reference-lists'
 import { listTakenKeys } from '@/db/queries/release-making'
 import { listReleaseEntries } from '@/db/queries/releases'
 import { fromJson } from '@/db/schema/values'
 import type { CampaignPermit } from '@/lib/work/people/permission'
 import { addList, match } from '@/lib/work/matching/_matching-scenario'
-import { requestListMatching, retireList } from '@/lib/work/matching/change-list'
+import { bringBackList, requestListMatching, retireList } from '@/lib/work/matching/change-list'
 import { decideObject } from '@/lib/work/matching/decide-match'
 import { matchListJob } from '@/lib/work/matching/list-jobs'
+import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
+import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { runDueJobs } from '@/lib/platform/jobs/run-jobs'
 import { stampPath } from '@/lib/work/stamps/stamp-store'
 import { addReleaseAt } from '@/tests/_support/released-entries'
@@ -78,12 +81,23 @@ describe('what is known of an entry', () => {
     await addGraded(scenario, 'lens', 'AAAA', atTen)
     const list = await addList(scenario, [{ name: 'Old ring', ...atTen }])
     await scenario.db.updateTable('reference_list').set({ state: 'reading' }).where('id', '=', list).execute()
+    const reading = { kind: JOB.readList, campaignId: scenario.campaign.id, payload: { listId: list } }
+    await enqueueJob(scenario.db, reading)
     await expect(publish()).rejects.toMatchObject({
       status: 409,
       type: 'being-matched',
       message: 'The known objects of Marsh lenses are still being read. Publish when that is done.',
     })
+    await expect(retireList(scenario.db, permit, list)).rejects.toThrow(/is being read/)
     expect(await scenario.db.selectFrom('release').select('id').execute()).toEqual([])
+    // Reading it was given up.
+    await scenario.db.updateTable('job').set({ state: 'failed' }).where('kind', '=', JOB.readList).execute()
+    await expect(publish()).rejects.toThrow('was not read to its end. Take it in again, or retire it; then publish.')
+    await retireList(scenario.db, permit, list)
+    expect(await knownAs((await publish()).id)).toEqual([[]])
+    await bringBackList(scenario.db, permit, list)
+    const { state } = (await findList(scenario.db, scenario.campaign.id, list))!
+    expect(state).toBe('draft')
   })
 
   it('is waited for while a list has still to be matched, or could not be, until a job has', async () => {
