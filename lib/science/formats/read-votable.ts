@@ -134,7 +134,8 @@ class VotableReader {
         this.hasVotable = true
         return
       case 'COOSYS':
-        if (attributes.ID) this.frames.set(attributes.ID, attributes.system ?? '')
+        if (attributes.ID)
+          this.frames.set(attributes.ID, `${attributes.system ?? ''} ${attributes.equinox ?? ''}`.trim())
         return
       case 'INFO':
         this.openInfo(attributes)

@@ -67,7 +67,7 @@ describe('the columns of a position', () => {
     expect(unit({ name: 'ra' })).toBe('deg')
   })
 
-  it('are warned about where they are missing, doubtful or in another frame', () => {
+  it('are warned about where they are missing or doubtful', () => {
     expect(guessPositionColumns(names('x', 'y'))).toEqual({
       ra: null,
       dec: null,
@@ -79,12 +79,6 @@ describe('the columns of a position', () => {
     expect(guessPositionColumns(names('RA', 'ra', 'dec')).warnings).toEqual([
       'Several columns could be the right ascension (RA, ra); the first is taken.',
     ])
-    const galactic = [
-      { name: 'ra', frame: 'eq_FK4' },
-      { name: 'dec', frame: 'eq_FK4' },
-    ]
-    expect(guessPositionColumns(galactic).warnings[0]).toContain('ra is eq_FK4, not ICRS')
-    expect(guessPositionColumns(galactic.map((column) => ({ ...column, frame: 'FK5' }))).warnings).toEqual([])
   })
 })
 

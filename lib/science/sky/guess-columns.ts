@@ -65,13 +65,6 @@ export function guessPositionColumns(columns: readonly ColumnSaying[]): Position
     ['dec', dec],
   ] as const) {
     if (guess === null) warnings.push(`No column looks like a ${WORDS[axis]}; choose it.`)
-    const frame = guess === null ? null : columns[guess.column].frame
-    const other = frame ? otherFrame(frame) : null
-    if (guess !== null && other !== null) {
-      warnings.push(
-        `The file says that ${columns[guess.column].name} is ${other}, not ICRS; give the frame when you match.`,
-      )
-    }
   }
   return { ra, dec, warnings: [...new Set(warnings)] }
 }
@@ -115,11 +108,4 @@ function angleUnit({ name, unit }: ColumnSaying, axis: Axis): AngleUnit {
   if (said !== '') return 'deg'
   if (/hms|dms|sexa/i.test(name)) return 'text'
   return /hour|_h$|hrs?$/i.test(name) && axis === 'ra' ? 'hour' : 'deg'
-}
-
-/** What a frame is when it is neither ICRS nor so near to it (FK5 J2000, within 0.03 arcsec) that matching does not see it. */
-function otherFrame(frame: string): string | null {
-  const plain = frame.trim().toLowerCase()
-  if (plain === '' || /icrs|fk5|gaia|bary/.test(plain)) return null
-  return frame
 }

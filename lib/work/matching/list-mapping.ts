@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import type { ListMapping } from '@/db/schema/matching'
 import { guessPositionColumns, type ColumnSaying } from '@/lib/science/sky/guess-columns'
+import { saidFrame } from './said-frame'
 
 /** A column of a list's file: its name, made unique, and what the file says of it. */
 export interface ListColumn extends ColumnSaying {
@@ -110,7 +111,7 @@ function unitOf(columns: readonly ListColumn[], name: string, guessed: ListMappi
   return /^\s*[+\-−]?\d+\s*[:hd°\s]\s*\d+/.test(sample) ? 'text' : guessed
 }
 
-function frameOf(said: string | null | undefined): ListMapping['frame'] {
-  if (/gal/i.test(said ?? '')) return 'GALACTIC'
-  return /fk5/i.test(said ?? '') ? 'FK5' : 'ICRS'
+const frameOf = (said: string | null | undefined): ListMapping['frame'] => {
+  const { kind } = saidFrame(said)
+  return kind === 'FK5' || kind === 'GALACTIC' ? kind : 'ICRS'
 }

@@ -30,6 +30,12 @@ async function readAll(text: string | Uint8Array, change: Partial<ListMapping> =
 }
 const sentences = (findings: Finding[]) => findings.map(({ sentence }) => sentence).join(' ')
 
+const votableIn = (system: string, equinox: string | null) =>
+  `<VOTABLE version="1.4"><RESOURCE><COOSYS ID="s" system="${system}"${equinox ? ` equinox="${equinox}"` : ''}/><TABLE>
+    <FIELD name="a" ucd="pos.eq.ra;meta.main" unit="deg" ref="s" datatype="double"/>
+    <FIELD name="d" ucd="pos.eq.dec;meta.main" unit="deg" ref="s" datatype="double"/>
+    <DATA><TABLEDATA><TR><TD>150</TD><TD>2</TD></TR></TABLEDATA></DATA></TABLE></RESOURCE></VOTABLE>`
+
 const GOOD = 'name,ra,dec,z,ref\nOld ring,150.25,-2.5,0.42,Heron 2019\nReed arc,359.9,12,-99,\n'
 
 describe('a look at a list', () => {
@@ -123,6 +129,35 @@ describe('a look at a list', () => {
     expect(format).toBe('votable')
     expect(mapping).toMatchObject({ ra: 'a', dec: 'd', raUnit: 'hour', name: 'MAIN' })
     expect(rows).toMatchObject([{ row: 1, name: 'Old ring', raDeg: 150, decDeg: -1.5 }])
+  })
+
+  // astropy 5.2.1: what is 150, 2 in FK4 B1950 lies 0.689 degrees from 150, 2 in ICRS.
+  it.each([
+    ['eq_FK4', 'B1950', /are eq_FK4, equinox B1950\. .*addskycoords -inunit deg -outunit deg fk4 icrs a d ra_icrs/],
+    ['FK4', null, /fk4 icrs/],
+    ['ecl_FK5', 'J2000', /ecliptic icrs/],
+    ['ecl_FK4', 'B1950', /turn them to ICRS first, and choose/],
+    ['supergalactic', null, /supergalactic icrs/],
+    ['eq_FK5', 'J1975', /are eq_FK5, equinox J1975\. /],
+    ['geo_app', null, /are geo_app\. /],
+  ])('stops a list that says its positions are %s %s', async (system, equinox, expected) => {
+    const text = votableIn(system, equinox)
+    const { findings } = await lookAt(text)
+    expect(findings).toMatchObject([{ stops: true, sentence: expect.stringMatching(expected) }])
+    const { read, rows } = await readAll(text)
+    expect(read).toMatchObject({ refused: [{ sentence: expect.stringMatching(expected) }] })
+    expect(rows).toEqual([])
+  })
+
+  it.each([
+    ['ICRS', null, 'ICRS'],
+    ['eq_FK5', 'J2000', 'FK5'],
+    ['FK5', '2000.0', 'FK5'],
+    ['galactic', null, 'GALACTIC'],
+    ['UNKNOWN', null, 'ICRS'],
+  ])('takes positions in %s %s as they are', async (system, equinox, frame) => {
+    const { findings, mapping } = await lookAt(votableIn(system, equinox))
+    expect([findings, mapping.frame]).toEqual([[], frame])
   })
 
   it.each([

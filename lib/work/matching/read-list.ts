@@ -5,6 +5,7 @@ import { anglesDeg, toIcrs, unitVector } from '@/lib/science/sky/frames'
 import type { Positions } from '@/lib/science/sky/position-index'
 import { openList, type FileFaults, type ListFile, type ListRow } from './list-file'
 import { guessMapping, type ListColumn } from './list-mapping'
+import { foreignFrame } from './said-frame'
 
 export interface Finding {
   sentence: string
@@ -183,7 +184,19 @@ function checked(
     findings.push({ sentence: 'No row has a position that can be used; nothing would match.', stops: true })
   const rowsAtFault = problems.flatMap(({ kind, rows }) => (kind === 'hours' ? [] : rows))
   const faulty = [...new Set(rowsAtFault)].sort((a, b) => a - b)
-  return { positions: inIcrs(positions, mapping.frame), usable, findings, faulty }
+  return {
+    positions: inIcrs(positions, mapping.frame),
+    usable,
+    findings: [...framesOf(file, mapping), ...findings],
+    faulty,
+  }
+}
+
+/** What the file says of the chosen columns and cannot be done stops the list: in silence its positions would be degrees off. */
+function framesOf({ columns }: ListFile, { ra, dec }: ListMapping): Finding[] {
+  const said = (name: string) => foreignFrame(columns.find((column) => column.name === name)?.frame, ra, dec)
+  const sentence = said(ra) ?? said(dec)
+  return sentence === null ? [] : [{ sentence, stops: true }]
 }
 
 function adviceFor({ kind, message }: PositionProblem): string {
