@@ -23,6 +23,7 @@ export const measurements = (changes: Partial<CandidateMeasurements> = {}): Cand
   cosmology: CONCORDANCE,
   lensRedshift: null,
   sourceRedshift: null,
+  knownRedshifts: [],
   ...changes,
 })
 

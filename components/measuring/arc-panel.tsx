@@ -1,5 +1,6 @@
 'use client'
 
+import { clickErrorArcsec } from '@/lib/work/measuring/fitted'
 import { Choice } from './choice'
 import type { DeskState } from './desk-state'
 import type { DeskStore } from './desk-store'
@@ -93,9 +94,14 @@ function CurveNumbers({
         ))}
       </dl>
       <Remarks lines={fitted.notes} />
+      <p className="text-note text-mute">{clickErrorInWords(pixelScaleArcsec)}</p>
     </div>
   )
 }
+
+/** Where a ± comes from. */
+export const clickErrorInWords = (pixelScaleArcsec: number): string =>
+  `±: 1 σ, each press taken to be good to half a pixel, ${arcsec(clickErrorArcsec(pixelScaleArcsec), 3)}.`
 
 export function EinsteinRadius({ radiusArcsec, errorArcsec }: { radiusArcsec: number; errorArcsec: number | null }) {
   return (

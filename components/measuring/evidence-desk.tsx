@@ -50,6 +50,7 @@ const NOTHING: CandidateMeasurements = {
   },
   lensRedshift: null,
   sourceRedshift: null,
+  knownRedshifts: [],
 }
 
 /** The parts of measuring on the page of a candidate: over the picture, beside it and in its column. */

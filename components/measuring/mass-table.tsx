@@ -3,10 +3,12 @@ import type { EinsteinMass, Interval } from '@/lib/science/lensing/einstein-mass
 import { cosmologyInWords } from '@/lib/work/campaigns/cosmology-of'
 import { powerOfTen, threeDigits } from './in-figures'
 
-const plain = ({ value, low, high }: Interval) => ({
-  value: threeDigits(value),
-  between: low === high ? null : `${threeDigits(low)} to ${threeDigits(high)}`,
-})
+/** Value and both ends with the decimals that the value has with three digits. */
+function plain({ value, low, high }: Interval) {
+  const decimals = threeDigits(value).split('.')[1]?.length ?? 0
+  const ends = [low, high].map((end) => (decimals > 0 ? end.toFixed(decimals) : threeDigits(end)))
+  return { value: threeDigits(value), between: low === high ? null : ends.join(' to ') }
+}
 
 /** One power of ten for the value and both ends. */
 function mass({ value, low, high }: Interval) {
@@ -14,6 +16,9 @@ function mass({ value, low, high }: Interval) {
   const ends = [low, high].map((end) => (end / 10 ** exponent).toFixed(2))
   return { value: powerOfTen(value, exponent), between: low === high ? null : ends.join(' to ') }
 }
+
+const RANGES =
+  'Ranges hold the middle 68 % of what errors leave; within an assumed range of redshift every value counts alike. '
 
 /** What the Einstein radius weighs, each with the middle 68 % that errors and ranges leave. */
 export function MassTable({ mass: found, cosmology }: { mass: EinsteinMass; cosmology: Cosmology }) {
@@ -43,7 +48,10 @@ export function MassTable({ mass: found, cosmology }: { mass: EinsteinMass; cosm
       </dl>
       <Remarks lines={found.unusual.map(({ sentence }) => sentence)} strong />
       <Remarks lines={found.notes} />
-      <p className="text-note text-mute">{cosmologyInWords(cosmology)}.</p>
+      <p className="text-note text-mute">
+        {rows.some(([, , { between }]) => between) ? RANGES : ''}
+        {cosmologyInWords(cosmology)}.
+      </p>
     </div>
   )
 }

@@ -27,6 +27,21 @@ describe('points by mouse', () => {
     ])
     // Half a pixel of 0.2 arcsec over the root of 4 points: N. Chernov (2010).
     expect(radius()).toBe('1.500 ± 0.050″')
+    expect(screen.getByText('±: 1 σ, each press taken to be good to half a pixel, 0.100″.')).toBeInTheDocument()
+  })
+
+  it('that measure a radius to less than half of it are kept only once that is confirmed', async () => {
+    const { save } = deskRoom()
+    await start()
+    press(1.5, 0)
+    press(1.45, 0.38)
+    press(1.3, 0.75)
+    const button = screen.getByText<HTMLButtonElement>('Save')
+    expect(screen.getByLabelText(/error of the radius is \d+ % of it.*Keep it all the same/)).not.toBeChecked()
+    expect(button).toBeDisabled()
+    fireEvent.click(screen.getByLabelText(/Keep it all the same/))
+    await userEvent.click(button)
+    expect(save).toHaveBeenCalledTimes(1)
   })
 
   it('of a picture that is turned and mirrored are the same places on the sky', async () => {

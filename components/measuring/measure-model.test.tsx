@@ -38,10 +38,39 @@ describe('a model by mouse and keys', () => {
     const before = Number(value('Source east, ″'))
     await choose(/✛ Lens/)
     drag([5, 5], [5.5, 5])
-    expect(value('Lens east, ″')).toBe('0.50')
+    expect(value('Lens east, ″')).toBe('0.500')
     expect(Number(value('Source east, ″'))).toBeCloseTo(before + 0.5, 9)
     await userEvent.click(screen.getByText('Undo'))
-    expect(value('Lens east, ″')).toBe('0.00')
+    expect(value('Lens east, ″')).toBe('0.000')
+  })
+
+  it('shows the numbers of the model to the last digit that it begins with, so that they can be worked with', async () => {
+    deskRoom()
+    await start()
+    expect([value('Source east, ″'), value('Source north, ″'), value('Einstein radius, ″')]).toEqual([
+      '0.120',
+      '0.075',
+      '1.500',
+    ])
+  })
+
+  it('says within which bounds a number lies that was not taken, until another is typed', async () => {
+    deskRoom()
+    await start()
+    set('Axis ratio', '-3')
+    expect(value('Axis ratio')).toBe('0.75')
+    expect(screen.getByText('‘-3’ was not taken: a number from 0.2 to 1.')).toBeInTheDocument()
+    set('Axis ratio', '0.5')
+    expect(screen.queryByText(/was not taken/)).toBeNull()
+  })
+
+  it('offers the redshift of a known object for the lens, and takes it over only when asked', async () => {
+    deskRoom({ knownRedshifts: [{ name: 'Curlew Arc 3', redshift: 0.5 }] })
+    await start()
+    expect(screen.queryByLabelText('Redshift of the lens: value')).toBeNull()
+    await userEvent.click(screen.getByText('Take 0.5, of Curlew Arc 3'))
+    expect(value('Redshift of the lens: value')).toBe('0.5')
+    expect(screen.queryByText(/Take 0.5/)).toBeNull()
   })
 
   it('takes hold of the handle that is pressed', async () => {
@@ -52,7 +81,7 @@ describe('a model by mouse and keys', () => {
     // The short axis ends in the south, b sqrt f from the lens.
     drag([0, -2], [0, -2.5])
     expect(screen.getByLabelText('□ Radius')).toBeChecked()
-    expect(value('Einstein radius, ″')).toBe('2.50')
+    expect(value('Einstein radius, ″')).toBe('2.500')
   })
 
   it('follows arrow keys over the picture, steppers and typed numbers, and holds them within what a lens can be', async () => {
@@ -62,9 +91,9 @@ describe('a model by mouse and keys', () => {
     sphere('1.2', '0.3')
     stage().focus()
     await user.keyboard('{ArrowLeft}{Shift>}{ArrowUp}{/Shift}')
-    expect([value('Source east, ″'), value('Source north, ″')]).toEqual(['0.40', '1.00'])
+    expect([value('Source east, ″'), value('Source north, ″')]).toEqual(['0.400', '1.000'])
     await user.click(screen.getByRole('button', { name: 'Einstein radius: more' }))
-    expect(value('Einstein radius, ″')).toBe('1.25')
+    expect(value('Einstein radius, ″')).toBe('1.250')
     screen.getByLabelText('Shear').focus()
     await user.keyboard('{ArrowUp}{ArrowUp}{ArrowDown}')
     expect(value('Shear')).toBe('0.01')
@@ -124,8 +153,8 @@ describe('a fit', () => {
     press(-0.9, 0)
     await choose(/^Radius$/)
     await fit()
-    expect(value('Einstein radius, ″')).toBe('1.20')
-    expect(value('Source east, ″')).toBe('0.30')
+    expect(value('Einstein radius, ″')).toBe('1.200')
+    expect(value('Source east, ″')).toBe('0.300')
     expect(screen.getByText('Fitted: residual 0.000″, 0.00 px')).toBeInTheDocument()
     await userEvent.click(screen.getByText('Save'))
     expect(save.mock.calls[0][0].shape).toMatchObject({ kind: 'model', fit: { kind: 'sphere', pointsAre: 'images' } })
@@ -141,7 +170,7 @@ describe('a fit', () => {
     for (const { east, north } of images) press(east, north)
     await choose(/^\+ shape$/)
     await fit()
-    expect(value('Einstein radius, ″')).toBe('1.30')
+    expect(value('Einstein radius, ″')).toBe('1.300')
     expect(value('Axis ratio')).toBe('0.70')
     expect(value('Long axis, °')).toBe('40')
     await userEvent.click(screen.getByRole('button', { name: 'Axis ratio: more' }))
@@ -159,7 +188,7 @@ describe('a fit', () => {
     press(1.5, 0)
     await fit()
     expect(screen.getByRole('alert')).toHaveTextContent(/1 point gives 2 numbers \(each image gives two\)/)
-    expect(value('Einstein radius, ″')).toBe('1.10')
+    expect(value('Einstein radius, ″')).toBe('1.100')
   })
 })
 
@@ -214,7 +243,7 @@ describe('a kept model', () => {
     await userEvent.click(screen.getByText('Leave'))
     await userEvent.click(screen.getByText('Open'))
     await userEvent.click(screen.getByRole('button', { name: 'Go on from here' }))
-    expect(value('Einstein radius, ″')).toBe('1.20')
+    expect(value('Einstein radius, ″')).toBe('1.200')
     await userEvent.click(screen.getByText('Save'))
     expect(save).toHaveBeenCalledOnce()
   })

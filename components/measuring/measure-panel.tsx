@@ -181,7 +181,7 @@ function AtWork({
         <ArcPanel desk={desk} state={state} now={arc} pixelScaleArcsec={pixelScaleArcsec} />
       ) : null}
       <div className="flex flex-col gap-3 border-t border-line pt-3">
-        <RedshiftFields desk={desk} state={state} read={read} />
+        <RedshiftFields desk={desk} state={state} read={read} known={measurements.knownRedshifts} />
         {mass && 'sentence' in mass ? <p className="text-note text-alarm">{mass.sentence}</p> : null}
         {mass && !('sentence' in mass) ? <MassTable mass={mass} cosmology={cosmology} /> : null}
       </div>
@@ -189,10 +189,17 @@ function AtWork({
         ready={ready}
         why={fault ?? 'There is no curve yet that could be kept.'}
         replaces={replaces}
+        doubt={doubtOn(radiusArcsec, errorArcsec)}
         onSave={onSave}
       />
     </>
   )
+}
+
+/** What is kept goes into the campaign's value of the radius and into releases. */
+function doubtOn(radiusArcsec: number | null, errorArcsec: number | null): string | null {
+  if (radiusArcsec === null || errorArcsec === null || errorArcsec <= radiusArcsec / 2) return null
+  return `The error of the radius is ${Math.round((100 * errorArcsec) / radiusArcsec)} % of it: points along more of the arc would measure it better.`
 }
 
 function shapeOf(state: DeskState, sourceRadiusArcsec: number): MeasuredShape {

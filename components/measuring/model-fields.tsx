@@ -17,8 +17,8 @@ export function ModelFields({
 }) {
   const { model, sourceRadiusArcsec } = state
   const { lens, source } = model
-  const place = Math.max(0.01, Number((pixelScaleArcsec / 4).toPrecision(1)))
-  const far = { low: -300, high: 300, step: place, decimals: 2, unit: '″' }
+  const place = Math.max(0.005, Number((pixelScaleArcsec / 4).toPrecision(1)))
+  const far = { low: -300, high: 300, step: place, decimals: 3, unit: '″' }
   const setLens = (change: Partial<DrawnLens>) =>
     desk.act({ model: { lens: { ...lens, ...change }, source }, fit: null })
   const setSource = (change: Partial<typeof source>) =>
@@ -32,7 +32,7 @@ export function ModelFields({
         value={lens.einsteinRadiusArcsec}
         unit="″"
         step={place}
-        decimals={2}
+        decimals={3}
         low={0.02}
         high={120}
         onChange={(radius) => desk.act({ model: { lens: withRadius(lens, radius), source }, fit: null })}

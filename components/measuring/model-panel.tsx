@@ -6,7 +6,7 @@ import { fitLens } from '@/lib/work/measuring/fitted'
 import { Choice } from './choice'
 import type { DeskState } from './desk-state'
 import type { DeskStore } from './desk-store'
-import { EinsteinRadius } from './arc-panel'
+import { clickErrorInWords, EinsteinRadius } from './arc-panel'
 import { sentenceOf, type ModelNow } from './fit-now'
 import { ImagesTable } from './images-table'
 import { LensFit } from './lens-fit'
@@ -61,6 +61,11 @@ export function ModelPanel({
         errorArcsec={fit?.result.parameters[0]?.uncertainty ?? null}
       />
       <ModelFields desk={desk} state={state} pixelScaleArcsec={pixelScaleArcsec} />
+      {state.drawn === 'all' ? (
+        <p className="text-note text-mute">
+          Solid: critical curve. Dashed: caustic, in the plane of the source. ‘Room around it’ shows what lies outside.
+        </p>
+      ) : null}
       <ImagesTable images={now.images} delays={delays} />
       <FitPart desk={desk} state={state} now={now} pixelScaleArcsec={pixelScaleArcsec} />
     </>
@@ -141,7 +146,12 @@ function FitPart({
           {refusal.sentence}
         </p>
       ) : null}
-      {fit ? <LensFit fit={fit.result} /> : null}
+      {fit ? (
+        <>
+          <LensFit fit={fit.result} />
+          <p className="text-note text-mute">{clickErrorInWords(pixelScaleArcsec)} χ² is in units of it.</p>
+        </>
+      ) : null}
     </section>
   )
 }

@@ -8,7 +8,7 @@ const BUTTON =
 
 /**
  * A number with a button on each side for a thumb; arrow keys in the field do the same, ten steps with Shift. What is typed counts once
- * it is a number within bounds, and stays as it is typed until the field is left.
+ * it is a number within bounds, and stays as it is typed until the field is left; what was not taken is told then.
  */
 export function NumberStepper({
   label,
@@ -34,11 +34,13 @@ export function NumberStepper({
 }) {
   const id = useId()
   const [typed, setTyped] = useState<string | null>(null)
+  const [refused, setRefused] = useState<string | null>(null)
   const number = typed === null ? value : numberIn(typed)
   const fault = typed !== null && !(number >= low && number <= high)
   const stepBy = (steps: number) => {
     const next = value + steps * step
     setTyped(null)
+    setRefused(null)
     onChange(
       round
         ? low + ((((next - low) % (high - low)) + (high - low)) % (high - low))
@@ -69,10 +71,14 @@ export function NumberStepper({
           value={typed ?? value.toFixed(decimals)}
           onChange={(event) => {
             setTyped(event.target.value)
+            setRefused(null)
             const now = numberIn(event.target.value)
             if (now >= low && now <= high) onChange(now)
           }}
-          onBlur={() => setTyped(null)}
+          onBlur={() => {
+            if (fault) setRefused(typed)
+            setTyped(null)
+          }}
           onKeyDown={(event) => {
             const sense = event.key === 'ArrowUp' ? 1 : event.key === 'ArrowDown' ? -1 : 0
             if (sense === 0) return
@@ -93,6 +99,10 @@ export function NumberStepper({
       {fault ? (
         <p id={`${id}-fault`} className="text-note text-alarm">
           A number from {low} to {high}.
+        </p>
+      ) : refused !== null ? (
+        <p role="status" className="text-note text-mute [overflow-wrap:anywhere]">
+          ‘{refused}’ was not taken: a number from {low} to {high}.
         </p>
       ) : null}
     </div>

@@ -1,13 +1,26 @@
 'use client'
 
 import { useId } from 'react'
+import { TextButton } from '@/components/ui/text-button'
+import type { CandidateMeasurements } from '@/lib/work/measuring/measurement-shown'
 import { Choice } from './choice'
 import type { DeskStore } from './desk-store'
 import type { DeskState } from './desk-state'
 import type { Basis, ReadRedshifts, RedshiftDraft, Which } from './redshift-draft'
 
 /** Redshifts of lens and source: the candidate's own, typed, or an assumed range that is marked so ever after. */
-export function RedshiftFields({ desk, state, read }: { desk: DeskStore; state: DeskState; read: ReadRedshifts }) {
+export function RedshiftFields({
+  desk,
+  state,
+  read,
+  known,
+}: {
+  desk: DeskStore
+  state: DeskState
+  read: ReadRedshifts
+  /** Of known objects at the place. */
+  known: CandidateMeasurements['knownRedshifts']
+}) {
   return (
     <div className="flex flex-col gap-3">
       {(['lens', 'source'] as const).map((which) => (
@@ -17,6 +30,7 @@ export function RedshiftFields({ desk, state, read }: { desk: DeskStore; state: 
           draft={state.redshifts[which]}
           given={desk.given[which]}
           fault={read.faults[which] ?? null}
+          known={which === 'lens' ? known : []}
           onChange={(change) =>
             desk.set({ redshifts: { ...state.redshifts, [which]: { ...state.redshifts[which], ...change } } })
           }
@@ -31,12 +45,14 @@ function RedshiftField({
   draft,
   given,
   fault,
+  known,
   onChange,
 }: {
   which: Which
   draft: RedshiftDraft
   given: number | null
   fault: string | null
+  known: CandidateMeasurements['knownRedshifts']
   onChange: (change: Partial<RedshiftDraft>) => void
 }) {
   const id = useId()
@@ -69,6 +85,16 @@ function RedshiftField({
         value={draft.basis}
         onChange={(basis) => onChange({ basis })}
       />
+      {known.map(({ name, redshift }) =>
+        draft.basis === 'typed' && draft.value === String(redshift) ? null : (
+          <TextButton
+            key={`${name} ${redshift}`}
+            onClick={() => onChange({ basis: 'typed', value: String(redshift), error: '' })}
+          >
+            Take {redshift}, of {name}
+          </TextButton>
+        ),
+      )}
       {draft.basis === 'typed' ? (
         <div className="flex flex-wrap gap-3">
           {field('value', 'z')}

@@ -31,6 +31,7 @@ export function SaveMeasurement({
   ready,
   why,
   replaces,
+  doubt = null,
   onSave,
 }: {
   /** null while there is nothing that could be kept. */
@@ -39,12 +40,15 @@ export function SaveMeasurement({
   why: string | null
   /** An own earlier one of this sort stands. */
   replaces: boolean
+  /** What speaks against keeping it, a sentence: it is kept once that has been read and confirmed. */
+  doubt?: string | null
   onSave: SaveAction
 }) {
   const id = useId()
   const [remark, setRemark] = useState('')
   const [answer, setAnswer] = useState<SaveAnswer>({})
   const [saving, setSaving] = useState(false)
+  const [confirmed, setConfirmed] = useState(false)
   const uid = useRef<{ of: string; uid: string } | null>(null)
   const save = async () => {
     if (!ready || saving) return
@@ -59,6 +63,7 @@ export function SaveMeasurement({
     setAnswer(answered)
     if ('done' in answered && answered.done) {
       setRemark('')
+      setConfirmed(false)
       uid.current = null
     }
   }
@@ -75,8 +80,19 @@ export function SaveMeasurement({
         onChange={(event) => setRemark(event.target.value)}
         className="rounded-control border border-edge bg-well px-2.5 py-1.5 text-small"
       />
+      {ready && doubt ? (
+        <label className="flex min-h-7 items-start gap-2 border-l-4 border-split pl-2.5 text-note">
+          <input
+            type="checkbox"
+            checked={confirmed}
+            onChange={(event) => setConfirmed(event.target.checked)}
+            className="mt-0.5 size-4 shrink-0 accent-lamp"
+          />
+          <span>{doubt} Keep it all the same.</span>
+        </label>
+      ) : null}
       <div className="flex flex-wrap items-center gap-x-4 gap-y-2">
-        <Button tone="lamp" disabled={!ready || saving} onClick={save}>
+        <Button tone="lamp" disabled={!ready || saving || (doubt !== null && !confirmed)} onClick={save}>
           {saving ? 'Saving…' : replaces ? 'Save in place of your earlier one' : 'Save'}
         </Button>
         {ready ? null : why ? <p className="min-w-0 flex-1 basis-40 text-note text-mute">{why}</p> : null}

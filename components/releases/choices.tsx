@@ -50,7 +50,7 @@ export function Tick({ name, label, error }: { name: string; label: string; erro
           name={name}
           aria-invalid={error ? true : undefined}
           aria-describedby={error ? id : undefined}
-          className="mt-1 size-4 shrink-0 accent-(--lamp)"
+          className="mt-1 size-4 shrink-0 outline-offset-2 outline-alarm accent-(--lamp) aria-invalid:outline-2"
         />
         {label}
       </label>

@@ -5,15 +5,20 @@ import type { ReleasePreview } from '@/lib/work/releases/preview-release'
 
 /** What a release that is published now would hold, and what keeps it from being published. */
 export function ReleasePreviewTray({ home, preview }: { home: string; preview: ReleasePreview }) {
-  const { confirmed, setAside, split, open, unplaced, before, gradesSinceRun, stamps } = preview
+  const { confirmed, setAside, split, open, unjudged, unplaced, before, gradesSinceRun, stamps } = preview
   return (
     <section aria-label="What would be in it" className="flex flex-col gap-4">
       <dl className="grid grid-cols-2 gap-px overflow-hidden rounded-tray border border-line bg-line sm:grid-cols-4">
         <Figure name={confirmed === 1 ? 'entry' : 'entries'} value={confirmed} strong />
         <Figure name="set aside" value={setAside} />
         <Figure name="split" value={split} />
-        <Figure name="still open" value={open} />
+        <Figure name="open, with grades" value={open} />
       </dl>
+      {unjudged > 0 ? (
+        <p className="text-small text-mute">
+          {counted(unjudged, 'candidate')} more without a grade or a ruling {unjudged === 1 ? 'is' : 'are'} in no file.
+        </p>
+      ) : null}
       <p className="text-small text-mute">
         {before === null
           ? 'It is the first, so there is nothing to compare it with.'

@@ -31,6 +31,20 @@ export async function countJudged(
     .execute()
 }
 
+/** Candidates that are in no file since nobody has judged them, calibration stamps left out. */
+export async function countUnjudged(db: Kysely<DB>, campaignId: number): Promise<number> {
+  const row = await db
+    .selectFrom('candidate')
+    .select((e) => e.fn.countAll<number>().as('count'))
+    .where('campaign_id', '=', campaignId)
+    .where('truth', 'is', null)
+    .where('verdict_id', 'is', null)
+    .where('ruling_id', 'is', null)
+    .where(sql<SqlBool>`not exists (select 1 from grade where grade.candidate_id = candidate.id)`)
+    .executeTakeFirstOrThrow()
+  return row.count
+}
+
 /** What the lists in force know `candidate` as, nearest first, without what a lead has told to differ. */
 const knownAs = sql`(select json_group_array(json_object('list', list, 'name', name, 'separationArcsec', separation,
       'keptOutOfNew', json(kept_out))

@@ -42,7 +42,7 @@ export interface CandidateMatches {
   objects: ObjectMatchRow[]
   /** In other campaigns that the person is a member of; as a grader there, those judged by them and decided. */
   elsewhere: OtherCampaignMatch[]
-  /** In the same campaign; not told to graders. */
+  /** In the same campaign, without what it is merged with now; not told to graders. */
   near: DuplicateOf[]
   merges: ToldMerge[]
   /** Of those that are merged with it now. */
@@ -76,7 +76,12 @@ export async function candidateMatches(
   return {
     objects: objects.filter(({ decision }) => role === 'lead' || decision !== 'different'),
     elsewhere: await listOtherCampaignMatches(db, viewer.id, [candidateId]),
-    near: role === 'grader' ? [] : await listDuplicatesOf(db, campaign.id, candidateId, campaign.match_radius_arcsec),
+    near:
+      role === 'grader'
+        ? []
+        : (await listDuplicatesOf(db, campaign.id, candidateId, campaign.match_radius_arcsec)).filter(
+            ({ id }) => !merges.some(({ holds, other }) => holds && other.id === id),
+          ),
     merges,
     histories,
   }

@@ -172,10 +172,12 @@ describe('a merge on the pages of both', () => {
     expect(kept?.merges).toMatchObject([
       { event: 'merged', isKept: true, holds: true, other: { name: 'SWS B' }, by: 'avocet' },
     ])
+    expect(kept?.near.map(({ name }) => name)).toEqual(['SWS C'])
     expect(kept?.histories).toMatchObject([{ name: 'SWS B', isKept: false, judgement: { votes: { A: 2, B: 2 } } }])
     expect((await candidateEvidence(db, leads, a)).judgement?.votes).toMatchObject({ A: 0, B: 0 })
     const merged = await candidateMatches(db, leads, b)
     expect(merged?.merges).toMatchObject([{ isKept: false, other: { name: 'SWS A' } }])
+    expect(merged?.near.map(({ name }) => name)).not.toContain('SWS A')
     expect(merged?.histories).toMatchObject([{ name: 'SWS A', isKept: true, judgement: { votes: { A: 0 } } }])
     await partCandidates(db, leads, b, 'Two after all.')
     const parted = await candidateMatches(db, leads, a)
@@ -184,6 +186,7 @@ describe('a merge on the pages of both', () => {
       ['parted', false],
     ])
     expect(parted?.histories).toEqual([])
+    expect(parted?.near.map(({ name }) => name)).toEqual(['SWS B', 'SWS C'])
     await db.destroy()
   })
 

@@ -11,6 +11,7 @@ import type { EinsteinMass } from '@/lib/science/lensing/einstein-mass'
 import { candidateScope } from '@/lib/work/campaigns/candidate-scope'
 import { cosmologyOf } from '@/lib/work/campaigns/cosmology-of'
 import { noteShown, revealedTo } from '@/lib/work/grading/may-reveal'
+import { knownLabels } from '@/lib/work/matching/known-labels'
 import { roleMay, type CampaignPermit } from '@/lib/work/people/permission'
 import type { Fitted } from './fitted'
 import type { CombinedShown, CandidateMeasurements, MeasurementShown } from './measurement-shown'
@@ -47,7 +48,17 @@ export async function listMeasurements(
     cosmology: cosmologyOf(campaign),
     lensRedshift: candidate.lens_redshift,
     sourceRedshift: candidate.source_redshift,
+    knownRedshifts: await knownRedshifts(db, permit, candidateId),
   }
+}
+
+async function knownRedshifts(
+  db: Kysely<DB>,
+  permit: CampaignPermit<'read'>,
+  candidateId: number,
+): Promise<CandidateMeasurements['knownRedshifts']> {
+  const labels = (await knownLabels(db, permit, [candidateId])).get(candidateId) ?? []
+  return labels.flatMap(({ name, redshift }) => (redshift !== null && redshift > 0 ? [{ name, redshift }] : []))
 }
 
 function shownOf(

@@ -48,4 +48,6 @@ export interface CandidateMeasurements {
   /** The candidate's own. */
   lensRedshift: number | null
   sourceRedshift: number | null
+  /** Of known objects at its place, nearest first: offered for the lens, and taken over by nobody unasked. */
+  knownRedshifts: { name: string; redshift: number }[]
 }

@@ -3,7 +3,7 @@ import { fromJson, type Json } from '@/db/schema/values'
 import type { Cosmology } from '@/lib/science/lensing/cosmology'
 import type { EinsteinMass, Interval } from '@/lib/science/lensing/einstein-mass'
 import type { CellValue, Column } from '@/lib/science/formats/columns'
-import type { Fitted, FittedModel } from '@/lib/work/measuring/fitted'
+import { HERE, type Fitted, type FittedModel } from '@/lib/work/measuring/fitted'
 import { VISUAL_CAUTION } from './cautions'
 
 /** A measurement that stood, as the release tells it. */
@@ -121,7 +121,7 @@ export const MEASUREMENT_COLUMNS: readonly Column<ReleasedMeasurement>[] = [
     mass && cosmology ? cosmology.name : null,
   ),
   number('hubble_constant', 'km/s/Mpc', 'Its Hubble constant', ({ mass, cosmology }) =>
-    mass && cosmology ? cosmology.hubble : null,
+    mass ? (cosmology?.hubble ?? null) : null,
   ),
   number('omega_matter', '', 'Its density of matter', ({ mass, cosmology }) =>
     mass && cosmology ? cosmology.omegaMatter : null,
@@ -157,7 +157,8 @@ export const MEASUREMENT_COLUMNS: readonly Column<ReleasedMeasurement>[] = [
   ),
 ]
 
-const centreOf = ({ fitted }: ReleasedMeasurement) => (fitted.kind === 'model' ? fitted.lens.centre : fitted.centre)
+const centreOf = ({ fitted }: ReleasedMeasurement) =>
+  fitted.kind === 'model' ? (fitted.lens.centre ?? HERE) : fitted.centre
 
 function axisRatio({ fitted }: ReleasedMeasurement): number | null {
   if (fitted.kind === 'circle') return null

@@ -4,6 +4,7 @@ import {
   countCalibrationStamps,
   countJudged,
   countNewGrades,
+  countUnjudged,
   listConfirmedWithoutPlace,
 } from '@/db/queries/release-making'
 import { findReleaseBefore, listMovedSince } from '@/db/queries/release-changes'
@@ -18,6 +19,8 @@ export interface ReleasePreview {
   setAside: number
   split: number
   open: number
+  /** Neither graded nor ruled on: in no file. */
+  unjudged: number
   /** Grades since the newest run: publishing runs the consensus first. */
   gradesSinceRun: number
   /** Confirmed candidates without a position: they keep it from being published. */
@@ -56,6 +59,7 @@ export async function previewRelease(db: Kysely<DB>, permit: CampaignPermit<'lea
     setAside: states.get('set aside') ?? 0,
     split: states.get('split') ?? 0,
     open: states.get('open') ?? 0,
+    unjudged: await countUnjudged(db, campaign.id),
     gradesSinceRun: await countNewGrades(db, campaign.id),
     unplaced: await listConfirmedWithoutPlace(db, campaign.id),
     before: before?.number ?? null,

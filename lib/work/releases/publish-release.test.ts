@@ -2,12 +2,13 @@ import { sql } from 'kysely'
 import { afterEach, expect, it } from 'vitest'
 import { listReleases } from '@/db/queries/releases'
 import { listCampaignJobs } from '@/db/queries/jobs'
+import { addImagedCandidate } from '@/tests/_support/scenario'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
 import { addGraded, makeReleaseScenario, publishAndMake, RELEASE, type ReleaseScenario } from './_release-scenario'
 import { makeAgain } from './make-again'
 import { previewRelease } from './preview-release'
 import { publishRelease } from './publish-release'
-import type { ReleaseInput } from './release-input'
+import { ReleaseInput } from './release-input'
 
 let scenario: ReleaseScenario
 afterEach(() => scenario.end())
@@ -117,6 +118,13 @@ it.each<[string, Partial<Record<keyof ReleaseInput, unknown>>]>([
   expect(await released()).toEqual([])
 })
 
+it('names the tick of the cautions where a form leaves it out, alone and beside other fields', () => {
+  const { cautionsRead: _left, ...form } = RELEASE
+  const fields = (input: object) => ReleaseInput.safeParse(input).error?.issues.map(({ path }) => path[0])
+  expect(fields(form)).toEqual(['cautionsRead'])
+  expect(fields({ ...form, title: '' })).toEqual(expect.arrayContaining(['title', 'cautionsRead']))
+})
+
 it('shows before what would be in it, what has come since, and what can be told from it', async () => {
   const { lens, lead } = await judged()
   expect(await previewRelease(scenario.db, lead)).toMatchObject({
@@ -125,7 +133,10 @@ it('shows before what would be in it, what has come since, and what can be told 
     gradesSinceRun: 8,
     before: null,
   })
+  await addImagedCandidate(scenario.db, scenario.campaign, 'nobody has seen it')
+  expect(await previewRelease(scenario.db, lead)).toMatchObject({ unjudged: 1 })
   await publishAndMake(scenario)
+  expect(await previewRelease(scenario.db, lead)).toMatchObject({ unjudged: 1 })
   await addGraded(scenario, 'late', 'AAAA', { raDeg: 12 })
   await ruleOnCandidate(scenario.db, lead, lens, { outcome: 'set aside', grade: null, reason: 'A spiral arm.' })
   const stamp = await addGraded(scenario, 'stamp', 'AAAA')

@@ -20,7 +20,8 @@ const line = (most: number, empty: string) =>
 const ticked = (sentence: string) =>
   z
     .union([z.boolean(), z.literal('on')])
-    .optional()
+    // A form leaves an empty tick out, and what is wrong with an optional key that is left out is not told.
+    .default(false)
     .refine((value) => value === true || value === 'on', sentence)
 
 export const AUTHORS_MOST = 500
