@@ -18,6 +18,7 @@ import type { DB } from '@/db/schema'
 import type { Role } from '@/db/schema/people'
 import { coneHalfWidthDeg } from '@/lib/science/sky/separation'
 import { CampaignInput } from '@/lib/work/campaigns/campaign-input'
+import { down as leaveListing, up as makeListing } from '@/migrations/015-listing'
 import { createCampaign } from '@/lib/work/campaigns/create-campaign'
 import { RuleInput } from '@/lib/work/campaigns/rule-input'
 import { candidateTable } from '@/lib/work/catalogue/candidate-table'
@@ -264,8 +265,12 @@ try {
   const search = await makeCampaign(db, lead, 'Large', members)
   const catalogue = await makeCampaign(db, lead, 'Confirmed', members)
   const started = performance.now()
+  const bare = db as unknown as Kysely<unknown>
+  // What tables sort by is filled in at once at the end, which is quicker than row by row.
+  await leaveListing(bare)
   await fill(db, search.id, graders, size, false)
   await fill(db, catalogue.id, graders, size, true)
+  await makeListing(bare)
   const fillSeconds = (performance.now() - started) / 1000
 
   const people = { lead, grader: graders[0], viewer: reader }
@@ -308,8 +313,8 @@ try {
       }
     }
   }
-  const p95 = ({ times }: TimedTable) => times[Math.floor(times.length * 0.95)]
-  tables.sort((a, b) => p95(b.timed) - p95(a.timed))
+  const median = ({ times }: TimedTable) => times[times.length >> 1]
+  tables.sort((a, b) => median(b.timed) - median(a.timed))
   const before = performance.now()
   await db
     .insertInto('left_out')
