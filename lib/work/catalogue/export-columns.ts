@@ -1,6 +1,7 @@
 import type { Column } from '@/lib/science/formats/columns'
 import type { CatalogueEntry } from './catalogue-entries'
 import { GRADE_CLASS_RULE } from './grade-class'
+import { remarksInText } from './remarks'
 
 /** Stands in every file that leaves the house. */
 export const CAUTION = 'Grades are visual judgements of images. They are not spectroscopic confirmations.'
@@ -110,8 +111,9 @@ export const EXPORT_COLUMNS: readonly Column<CatalogueEntry>[] = [
     name: 'remarks',
     datatype: 'unicodeChar',
     ucd: 'meta.note',
-    description: 'Remarks of the graders, each on a line of its own behind the pseudonym of who made it',
-    value: (entry) => entry.remarks.map(({ by, remark }) => `${by}: ${remark}`).join('\n') || null,
+    description:
+      'Remarks of the graders, each on a line of its own behind the pseudonym of who made it; further lines of a remark are indented',
+    value: (entry) => remarksInText(entry.remarks) || null,
   },
   {
     name: 'tags',

@@ -7,6 +7,7 @@ import { fromJson, toJson } from '@/db/schema/values'
 import { gradeClass } from '@/lib/work/catalogue/grade-class'
 import { standingRadii, type StandingRadius } from '@/lib/work/measuring/standing-radii'
 import { entryKey, freeKey } from './entry-key'
+import { remarksInText } from '@/lib/work/catalogue/remarks'
 import { releasedCandidates, type Frozen, type ReleasedCandidate } from './read-frozen'
 
 /** Keeps a stamp for good, as a blob, and returns whether it could be had. */
@@ -89,7 +90,7 @@ function entryOf(candidate: ReleasedCandidate, { radius, stamps }: Beside): Entr
     cannot_judge: votes.U,
     decided_by: ruled ? 'ruling' : 'verdict',
     reason: (ruled ? candidate.rulingReason : null) ?? candidate.verdictReason,
-    remarks: remarks.map(({ by, remark }) => `${by}: ${remark}`).join('\n') || null,
+    remarks: remarksInText(remarks) || null,
     tags: countedTags(counted.flatMap(({ tags }) => fromJson(tags))),
     known_as: candidate.known_as!,
     einstein_radius_arcsec: radius?.einsteinRadiusArcsec ?? null,

@@ -1,6 +1,7 @@
 import type { ReleaseEntry, ReleasedLabel } from '@/db/schema/releases'
 import { fromJson, type Json } from '@/db/schema/values'
 import { viewPlace } from '@/lib/science/imaging/recipe'
+import { remarksFromText, type Remark } from '@/lib/work/catalogue/remarks'
 
 export interface Votes {
   A: number
@@ -32,7 +33,7 @@ export interface EntryRow {
 export interface EntryDetail extends EntryRow {
   decidedBy: 'verdict' | 'ruling'
   reason: string
-  remarks: { by: string; remark: string }[]
+  remarks: Remark[]
   tags: string | null
   nMeasured: number
   scatterArcsec: number | null
@@ -71,7 +72,7 @@ export function entryDetail(row: ReleaseEntry): EntryDetail {
     ...entryRow(row),
     decidedBy: row.decided_by === 'ruling' ? 'ruling' : 'verdict',
     reason: row.reason,
-    remarks: remarksOf(row.remarks),
+    remarks: remarksFromText(row.remarks),
     tags: row.tags,
     nMeasured: row.n_measured,
     scatterArcsec: measured.scatterArcsec ?? null,
@@ -83,15 +84,4 @@ export function entryDetail(row: ReleaseEntry): EntryDetail {
       .map(([view, sha256]) => ({ view, sha256 }))
       .toSorted((a, b) => viewPlace(a.view) - viewPlace(b.view)),
   }
-}
-
-/** A line each, `pseudonym: remark`; a remark of several lines goes on until the next pseudonym. */
-function remarksOf(text: string | null): { by: string; remark: string }[] {
-  const remarks: { by: string; remark: string }[] = []
-  for (const line of text?.split('\n') ?? []) {
-    const start = /^([A-Z]\d{2,}): (.*)$/s.exec(line)
-    if (start || remarks.length === 0) remarks.push({ by: start?.[1] ?? '', remark: start?.[2] ?? line })
-    else remarks[remarks.length - 1].remark += `\n${line}`
-  }
-  return remarks
 }
