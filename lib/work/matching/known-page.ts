@@ -81,6 +81,7 @@ function toldList(
   work: readonly { kind: string; listId: number | null; done: number }[],
 ): KnownList {
   const own = work.find(({ listId }) => listId === list.id)
+  const isStuck = list.state === 'reading' && own?.kind !== JOB.readList
   return {
     id: list.id,
     name: list.name,
@@ -93,8 +94,8 @@ function toldList(
     positions: list.positions,
     radiusArcsec: list.radius_arcsec,
     keepsOutOfNew: list.keeps_out_of_new === 1,
-    state: list.state,
-    reason: list.reason,
+    state: isStuck ? 'refused' : list.state,
+    reason: isStuck ? 'The server went down each time it was being read. Take it in again.' : list.reason,
     uploadedBy: isLead ? list.uploadedBy : 'a lead',
     uploadedAt: list.uploaded_at,
     matched: list.matched,

@@ -10,6 +10,7 @@ import type { CampaignPermit } from '@/lib/work/people/permission'
 import { addList, match } from '@/lib/work/matching/_matching-scenario'
 import { bringBackList, requestListMatching, retireList } from '@/lib/work/matching/change-list'
 import { decideObject } from '@/lib/work/matching/decide-match'
+import { knownList } from '@/lib/work/matching/known-page'
 import { matchListJob } from '@/lib/work/matching/list-jobs'
 import { enqueueJob } from '@/lib/platform/jobs/enqueue-job'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
@@ -93,6 +94,10 @@ describe('what is known of an entry', () => {
     // Reading it was given up.
     await scenario.db.updateTable('job').set({ state: 'failed' }).where('kind', '=', JOB.readList).execute()
     await expect(publish()).rejects.toThrow('was not read to its end. Take it in again, or retire it; then publish.')
+    expect(await knownList(scenario.db, permit, list)).toMatchObject({
+      state: 'refused',
+      reason: expect.stringContaining('Take it in again') as string,
+    })
     await retireList(scenario.db, permit, list)
     expect(await knownAs((await publish()).id)).toEqual([[]])
     await bringBackList(scenario.db, permit, list)
