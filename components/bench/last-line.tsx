@@ -88,7 +88,7 @@ export function LastLine({
           <span className={`whitespace-nowrap ${explaining ? 'hidden md:inline' : ''}`}>
             {WHAT[session.last?.what ?? 'given']}{' '}
             {/* Wide enough for most names: one that comes in place of a number moves nothing. */}
-            <span className="figures inline-block min-w-[9ch] text-left">{last.called ?? last.candidate.name}</span>
+            <span className="figures inline-block min-w-[12ch] text-left">{last.called ?? last.candidate.name}</span>
             {last.answer.reason ? `, ${last.answer.reason}` : ''}
           </span>
           <LineButton label="undo" keyName="Z" onPress={onUndo} />

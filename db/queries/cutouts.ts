@@ -91,7 +91,7 @@ export interface FileOfCandidate {
   gradesGiven: number
 }
 
-/** Files with the candidate that has their planes, by key of the file. */
+/** Files with the candidate that has their planes, by key of the file; none that was made here for a calibration stamp. */
 export async function listFilesOfCandidates(
   db: Kysely<DB>,
   campaignId: number,
@@ -111,6 +111,7 @@ export async function listFilesOfCandidates(
     ])
     .where('file.campaign_id', '=', campaignId)
     .where('file.id', '>', afterId)
+    .where('candidate.painted_over', 'is', null)
     .groupBy('file.id')
     .orderBy('file.id')
     .limit(limit)

@@ -1,10 +1,11 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
 import type { FileRow } from '../schema/intake'
+import { isPaintedFile } from './painted-names'
 
 export type FileOfName = Pick<FileRow, 'name' | 'sha256' | 'bytes' | 'fate' | 'fault'>
 
-/** The files in force of these names. */
+/** The files in force of these names, as they were delivered: none that was made here. */
 export async function listFilesByName(
   db: Kysely<DB>,
   campaignId: number,
@@ -17,6 +18,7 @@ export async function listFilesByName(
     .where('campaign_id', '=', campaignId)
     .where('name', 'in', sql<string>`(select value from json_each(${JSON.stringify(names)}))`)
     .where('replaced_by', 'is', null)
+    .where((e) => e.not(isPaintedFile('file.id')))
     .execute()
 }
 

@@ -66,7 +66,7 @@ describe('painted stamps', () => {
     expect(new Set(shapes.map((shape) => JSON.stringify(shape))).size).toBe(1)
     const files = await room.db.selectFrom('file').select(['name', 'fate', 'bytes']).execute()
     expect(new Set(files.map(({ fate }) => fate))).toEqual(new Set(['imaged']))
-    for (const { name } of files) expect(name).toMatch(/^SWS\d{4}_[gri]\.fits$/)
+    for (const { name } of files) expect(name).toMatch(/^(SWS\d{4}|calibration-order-of-\d+)_[gri]\.fits$/)
   })
 
   it('hold the galaxy, turned, and the light that their truth tells', async () => {

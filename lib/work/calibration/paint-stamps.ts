@@ -5,12 +5,11 @@ import {
   insertCalibrationStamp,
   listGalaxiesById,
   listMadeOfOrder,
-  listNamesOfEnds,
   listPositionsByLot,
   scoreByLot,
   type GalaxyFacts,
 } from '@/db/queries/calibration'
-import { listCandidateNames, listHeldPlanes } from '@/db/queries/cutouts'
+import { listHeldPlanes } from '@/db/queries/cutouts'
 import { insertFile } from '@/db/queries/intake'
 import { findCampaignById } from '@/db/queries/stamps'
 import type { DB } from '@/db/schema'
@@ -21,11 +20,11 @@ import type { BlobStore, StoredBlob } from '@/lib/platform/storage/blob-store'
 import type { PaintingRanges } from '@/lib/science/lensing/painting/painting-ranges'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import type { SkyPosition } from '@/lib/science/sky/separation'
+import { freeName } from '@/lib/work/intake/free-name'
 import { requestImaging } from '@/lib/work/stamps/commit-outcomes'
 import type { Painted, PaintedFile, PaintRunner } from '@/lib/work/stamps/paint-task'
 import { heldPlane } from '@/lib/work/stamps/plan-imaging'
 import { EXPLAIN_COPY, explainPainting } from './explain-painting'
-import { proposeNames } from './stamp-name'
 import { digitsOf, placeLike } from './stamp-place'
 
 export interface PaintStampsPayload {
@@ -156,20 +155,6 @@ async function placeFor(db: Kysely<DB>, campaignId: number, galaxy: GalaxyFacts,
   return placeLike(sample, { ra: digitsOf(raDeg), dec: digitsOf(decDeg) }, random)
 }
 
-async function freeName(
-  db: Kysely<DB>,
-  campaignId: number,
-  position: SkyPosition | null,
-  stamps: number,
-  random: SeededRandom,
-): Promise<string> {
-  const proposed = proposeNames(await listNamesOfEnds(db, campaignId), position, stamps, random)
-  const taken = new Set(await listCandidateNames(db, campaignId, proposed))
-  const free = proposed.find((name) => !taken.has(name))
-  if (free === undefined) throw new Error('No free name was found for a calibration stamp')
-  return free
-}
-
 interface Kept {
   name: string
   score: number | null
@@ -194,7 +179,8 @@ async function keepStamp(
       const file = await insertFile(transaction, {
         campaignId,
         batchId,
-        name: `${name}_${band}.fits`,
+        // Like nothing that a survey delivers: a file of the same name would take its place.
+        name: `calibration-${order.slice(0, 8)}-${part}_${band}.fits`,
         kind: 'fits',
         ...blob,
         fate: 'read',

@@ -5,7 +5,7 @@ import { USUAL_RANGES } from '@/lib/science/lensing/painting/painting-ranges'
 import { SeededRandom } from '@/lib/science/lensing/seeded-random'
 import { directionOf, explainPainting } from './explain-painting'
 import { OrderInput } from './painting-input'
-import { proposeNames } from './stamp-name'
+import { proposeNames } from '@/lib/work/intake/stamp-name'
 
 const arc = (positionAngleDeg: number, lengthDeg: number, radiusArcsec = 1.4): PaintedArc => ({
   rays: [],

@@ -10,6 +10,7 @@ import {
   setFileStored,
 } from '@/db/queries/intake'
 import { hasFileOfName } from '@/db/queries/duplicates'
+import { clearPaintedFileName } from '@/db/queries/painted-names'
 import type { DB } from '@/db/schema'
 import type { FileFate, FileRow } from '@/db/schema/intake'
 import { recordEvent } from '@/lib/platform/audit/record-event'
@@ -87,6 +88,7 @@ async function keepNew(db: Kysely<DB>, delivery: Delivery, name: string, blob: S
   const now = isoTime()
   const { campaignId, personId } = delivery
   const kind = kindOfName(name)
+  await clearPaintedFileName(db, campaignId, name)
   const twin = await findTwin(db, campaignId, name, blob.sha256, kind)
   const row = await insertFile(db, {
     campaignId,

@@ -20,6 +20,7 @@ import { isoTime } from '@/lib/platform/clock'
 import { giveWay } from '@/lib/platform/jobs/give-way'
 import { requestMatching } from '@/lib/platform/jobs/request-matching'
 import { baseName } from './file-name'
+import { giveNamesUp } from './give-names-up'
 import { groupBy } from './group-by'
 import { manifestFacts, type ManifestFacts } from './manifest-facts'
 import { rowsOfFile } from './match-name'
@@ -57,6 +58,7 @@ async function namesTold(db: Kysely<DB>, campaignId: number, manifestId: number)
       afterId = last.id
       for (const { file_base } of rows) if (file_base !== null) bases.add(file_base.toLowerCase())
       const named = [...new Set(rows.flatMap(({ candidate }) => candidate ?? []))]
+      await db.transaction().execute((transaction) => giveNamesUp(transaction, campaignId, named))
       for (const name of await listCandidateNames(db, campaignId, named)) names.add(name)
       await giveWay()
     }

@@ -17,6 +17,7 @@ import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { requestMatching } from '@/lib/platform/jobs/request-matching'
 import { isoTime } from '@/lib/platform/clock'
 import type { ManifestFacts } from '@/lib/work/intake/manifest-facts'
+import { giveNamesUp } from '@/lib/work/intake/give-names-up'
 import { groupBy } from '@/lib/work/intake/group-by'
 import { tellTruths, type ToldTruth } from '@/lib/work/intake/tell-truths'
 import { NOT_IMAGED, type CandidateOutcome, type PlannedPlane } from './worker-tasks'
@@ -58,6 +59,11 @@ async function write(
     outcomes.flatMap(({ files }) => files.map(({ id }) => id)),
   )
   const due = outcomes.filter(({ files }) => files.every(({ id }) => waiting.has(id)))
+  await giveNamesUp(
+    transaction,
+    campaignId,
+    due.flatMap(({ name, files }) => (files.length > 0 ? name : [])),
+  )
   const overtaken = await findOvertaken(transaction, campaignId, due)
   const standing = due.filter((outcome) => !overtaken.has(outcome))
   const known = standing.filter(({ planes, stamps }) => planes.length > 0 || stamps !== null)

@@ -97,19 +97,22 @@ describe('a manifest with a truth column', () => {
     expect(await intake.reasonOf('known.csv')).toContain('has been decided on as an ordinary candidate')
   })
 
-  it('keeps what a stamp was made as here, and says so', async () => {
+  it('is never that of a stamp that was made here, which gives its name up', async () => {
     await deliverCandidates(2)
     await intake.read()
+    const id = await idOf('SWS1')
+    const made = () =>
+      intake.db.selectFrom('candidate').select(['truth', 'explanation']).where('id', '=', id).executeTakeFirst()
     await intake.db
       .updateTable('candidate')
       .set({ truth: 'lens', painted_over: await idOf('SWS2'), explanation: 'Painted.' })
       .where('name', '=', 'SWS1')
       .execute()
     await manifest('name,truth,explanation\nSWS1,0,Other.\n')
-    expect((await truths())[0]).toEqual(['SWS1', 'lens', 'Painted.'])
-    expect(await intake.reasonOf('known.csv')).toContain('was made here')
+    expect(await made()).toEqual({ truth: 'lens', explanation: 'Painted.' })
+    expect((await truths()).map(([name]) => name)).not.toContain('SWS1')
     await manifest('name,score\nSWS1,0.3\n')
-    expect((await truths())[0]).toEqual(['SWS1', 'lens', 'Painted.'])
+    expect(await made()).toEqual({ truth: 'lens', explanation: 'Painted.' })
   })
 })
 
