@@ -78,7 +78,8 @@ export function ListScreen({
   const { state, pending, formProps } = changesColumns ? take : change
   const stops = look.findings.some((finding) => finding.stops)
   const error = (field: string) => state.errors?.[field]
-  const isFixed = list.state === 'reading' || list.state === 'retired'
+  const isReading = list.state === 'reading' || list.work?.does === 'reading'
+  const isFixed = isReading || list.state === 'retired'
 
   return (
     <div className="mx-auto flex max-w-6xl flex-col gap-7 px-4 py-6 md:px-8 md:py-8">
@@ -114,7 +115,7 @@ export function ListScreen({
             confirm="Bring it back"
             action={bringBackAction}
           />
-        ) : list.state === 'reading' ? null : (
+        ) : isReading ? null : (
           <ConfirmButton
             label="Retire it"
             name={`Retire ${list.name}`}
@@ -125,7 +126,7 @@ export function ListScreen({
           />
         )}
       </PageHead>
-      {list.reason && list.state !== 'reading' ? (
+      {list.reason && !isReading ? (
         <Notice tone={list.state === 'refused' ? 'alarm' : 'note'}>
           {list.state === 'refused' ? (
             <p className="font-semibold">It was not taken in. The file and your choice are still here.</p>
@@ -135,7 +136,7 @@ export function ListScreen({
           ))}
         </Notice>
       ) : null}
-      {list.state === 'reading' ? <Notice>It is being read. Wait until it is there, then change it.</Notice> : null}
+      {isReading ? <Notice>It is being read. Wait until it is there, then change it.</Notice> : null}
       <form {...formProps} className="flex flex-col gap-7">
         <input type="hidden" name="mapping" value={JSON.stringify(mapping)} />
         <FormSection title="What it is" about="Stands beside every label, and in releases.">

@@ -47,6 +47,18 @@ describe('a manifest', () => {
     expect(problems[3]).toMatch(/^Line 3: it has a right ascension without a declination/)
   })
 
+  it('says where a source does not lie behind its lens, and keeps both as they are', () => {
+    const text = 'name,lens_redshift,source_redshift\nSWS1,0.9,0.5\nSWS2,0.5,0.5\nSWS3,0.5,0.9\nSWS4,0.9,\nSWS5,,0.5\n'
+    const { entries, problems } = parse(text)
+    expect(problems).toEqual([
+      expect.stringMatching(
+        /^Line 2: source_redshift 0\.5 is not above lens_redshift 0\.9: .* must lie behind the lens/,
+      ),
+      expect.stringMatching(/^Line 3: /),
+    ])
+    expect(entries[0]).toMatchObject({ lensRedshift: 0.9, sourceRedshift: 0.5 })
+  })
+
   it('takes decimal commas where columns are parted by semicolons', () => {
     const { entries, problems } = parse('\ufeffname;ra;dec;score\r\nSWS1;10,5;-3,25;0,75\r\n')
     expect(problems).toEqual([])

@@ -85,6 +85,14 @@ function entryOf(
     fault(`${columns[column]} is '${text}'; ${rule}.`)
     return null
   }
+  const redshift = (column: 'lensRedshift' | 'sourceRedshift') =>
+    number(column, (value) => value >= 0 && value < 20, 'a redshift is a number from 0 to 20')
+  const [lensRedshift, sourceRedshift] = [redshift('lensRedshift'), redshift('sourceRedshift')]
+  if (lensRedshift !== null && sourceRedshift !== null && sourceRedshift <= lensRedshift) {
+    fault(
+      `${columns.sourceRedshift} ${sourceRedshift} is not above ${columns.lensRedshift} ${lensRedshift}: the source must lie behind the lens. Both are kept as they are; check which is which.`,
+    )
+  }
   return {
     line,
     fileName: fileName?.replaceAll('\\', '/').replace(/^(\.?\/)+/, '') ?? null,
@@ -98,12 +106,8 @@ function entryOf(
       'a pixel scale is a number of arcseconds above 0',
     ),
     score: number('score', () => true, 'a score is a number'),
-    lensRedshift: number('lensRedshift', (value) => value >= 0 && value < 20, 'a redshift is a number from 0 to 20'),
-    sourceRedshift: number(
-      'sourceRedshift',
-      (value) => value >= 0 && value < 20,
-      'a redshift is a number from 0 to 20',
-    ),
+    lensRedshift,
+    sourceRedshift,
     truth: truthOf(cell(values, columns.truth), columns.truth, fault),
     explanation: explanationOf(cell(values, columns.explanation), columns.explanation, fault),
   }

@@ -20,7 +20,7 @@ type Lead = CampaignPermit<'lead'>
 async function requireList(db: Kysely<DB>, permit: Lead, listId: number): Promise<ReferenceList> {
   const list = await findList(db, permit.campaign.id, listId)
   if (!list) throw notFound('list')
-  if (list.state === 'reading' && (await isBeingRead(db, list))) {
+  if (await isBeingRead(db, list)) {
     throw conflict('being-read', `${list.name} is being read. Wait until it is there, then change it.`)
   }
   return list
@@ -45,7 +45,8 @@ export async function requestListMatching(db: Kysely<DB>, list: { id: number; ca
 }
 
 /**
- * Has a list read with these columns; what is wrong with it comes as the list's own reason, and file and choice stay.
+ * Has a list read with these columns; what is wrong with it comes as the list's own reason, and file and choice stay. One in force
+ * stays so, by the columns that it has, until the file has been looked through by the new ones.
  * @throws Problem 404; 409 `being-read`, `retired`.
  */
 export async function takeInList(
@@ -61,11 +62,19 @@ export async function takeInList(
     if (list.state === 'retired') {
       throw conflict('retired', `${list.name} is retired. Bring it back before it is read again.`)
     }
-    const change = { ...columnsOf(details), mapping: toJson(mapping), state: 'reading', reason: null } as const
-    await updateList(transaction, listId, ['draft', 'refused', 'ready', 'reading'], { ...change, state_since: now })
+    const isInForce = list.state === 'ready'
+    const change = isInForce
+      ? columnsOf(details)
+      : { ...columnsOf(details), mapping: toJson(mapping), state: 'reading' as const, reason: null, state_since: now }
+    await updateList(transaction, listId, ['draft', 'refused', 'ready', 'reading'], change)
     const uniqueKey = `${JOB.readList}:${listId}`
     const campaignId = permit.campaign.id
-    await enqueueJob(transaction, { kind: JOB.readList, campaignId, uniqueKey, payload: { listId } })
+    await enqueueJob(transaction, {
+      kind: JOB.readList,
+      campaignId,
+      uniqueKey,
+      payload: isInForce ? { listId, mapping } : { listId },
+    })
     await record(transaction, permit, 'matching.list-taken-in', details.name, { list: listId, mapping, ...details })
   })
 }

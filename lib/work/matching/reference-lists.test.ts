@@ -2,6 +2,7 @@ import { mkdtemp, rm } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import type { ListMapping } from '@/db/schema/matching'
 import { runDueJobs } from '@/lib/platform/jobs/run-jobs'
 import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { log } from '@/lib/platform/log'
@@ -56,9 +57,13 @@ async function upload(text: string, name = 'marsh-lenses.csv') {
   })
 }
 
+const readAgain = (
+  { listId, mapping }: { listId: number; mapping?: ListMapping },
+  progress: (done: number, total: number) => Promise<void>,
+) => readListRows(scenario.db, tools, listId, progress, mapping)
 const jobs = {
   [JOB.readList]: ({ payload, progress }: { payload: unknown; progress: (a: number, b: number) => Promise<void> }) =>
-    readListRows(scenario.db, tools, (payload as { listId: number }).listId, progress),
+    readAgain(payload as { listId: number; mapping?: ListMapping }, progress),
   [JOB.matchList]: matchListJob,
   [JOB.matchCandidates]: matchCandidatesJob,
 }
@@ -120,6 +125,37 @@ describe('a reference list', () => {
       positions: 12,
       reason: null,
     })
+  })
+
+  it('in force stands as it was where a new choice of columns cannot be read, and follows one that can', async () => {
+    const { db, campaign } = scenario
+    const candidate = await addImagedCandidate(db, campaign, 'SWS 1', { raDeg: 150.1, decDeg: 2.2 })
+    const rows = Array.from({ length: 12 }, (_, k) => `R${k},N${k},${150.1 + k},${2.2 + k}`)
+    const { id } = await upload(`name,other,ra,dec\n${rows.join('\n')}\n`)
+    const before = await takeIn(id)
+    const wrong = await takeIn(id, { ra: 'dec', dec: 'ra' })
+    expect(wrong).toMatchObject({ state: 'ready', rows: 12, matched: 1, mapping: before.mapping })
+    expect(wrong.reason).toMatch(/^The list stands as it was before\. By the new choice: .*probably swapped/)
+    const labels = async () => (await knownLabels(db, await lead(), [candidate])).get(candidate)
+    expect(await labels()).toMatchObject([{ name: 'R0' }])
+    const right = await takeIn(id, { ...before.mapping, name: 'other' })
+    expect(right).toMatchObject({ state: 'ready', rows: 12, matched: 1, reason: null })
+    expect(await labels()).toMatchObject([{ name: 'N0' }])
+  })
+
+  it('in force labels while it is looked through anew, and is changed or retired only after that', async () => {
+    const { db, campaign } = scenario
+    const candidate = await addImagedCandidate(db, campaign, 'SWS 1', { raDeg: 150.1, decDeg: 2.2 })
+    const { id } = await upload(LIST)
+    const { mapping } = await takeIn(id)
+    await takeInList(db, await lead(), id, { details: details(), mapping: mapping! })
+    expect((await knownLabels(db, await lead(), [candidate])).size).toBe(1)
+    await expect(retireList(db, await lead(), id)).rejects.toThrow(/is being read/)
+    await expect(takeInList(db, await lead(), id, { details: details(), mapping: mapping! })).rejects.toThrow(
+      /is being read/,
+    )
+    await runDueJobs(db, jobs)
+    expect(await retireList(db, await lead(), id)).toEqual({ name: 'Marsh lenses' })
   })
 
   it('is read again from nothing after a kill in the middle, without doubling', async () => {
