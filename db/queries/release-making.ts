@@ -243,10 +243,10 @@ export async function listStampsToRelease(
   db: Kysely<DB>,
   { campaignId, recipeHash }: { campaignId: number; recipeHash: string | null },
   candidateIds: readonly number[],
-): Promise<{ candidateId: number; view: string; sha256: string }[]> {
+): Promise<{ candidateId: number; recipeId: number; view: string; sha256: string }[]> {
   return db
     .selectFrom('stamp')
-    .select(['candidate_id as candidateId', 'view', 'sha256'])
+    .select(['candidate_id as candidateId', 'recipe_id as recipeId', 'view', 'sha256'])
     .where(inCampaign('stamp.campaign_id', campaignId))
     .where('candidate_id', 'in', among(candidateIds))
     .where('recipe_id', '=', (e) =>

@@ -27,7 +27,7 @@ const reason = 'Its pictures are lost.'
 async function unmakable(): Promise<number> {
   const { id } = await publishRelease(scenario.db, permit, RELEASE)
   const without = { ...scenario.tools, stampFolder: `${scenario.tools.stampFolder}-lost` }
-  await expect(makeRelease(without, id, async () => {})).rejects.toThrow(/picture was missing/)
+  await expect(makeRelease(without, id, async () => {})).rejects.toThrow(/1 picture was missing/)
   return id
 }
 

@@ -10,22 +10,18 @@ import { entryKey, freeKey } from './entry-key'
 import { remarksInText } from '@/lib/work/catalogue/remarks'
 import { releasedCandidates, type Frozen, type ReleasedCandidate } from './read-frozen'
 
-/** Keeps a stamp for good, as a blob, and returns whether it could be had. */
-export type KeepStamp = (candidateId: number, sha256: string) => Promise<void>
-
 interface Beside {
   radius: StandingRadius | undefined
   stamps: { view: string; sha256: string }[]
 }
 
 /**
- * Adds the entries, a page a transaction, in the order of the candidates. Where some are there already, because a process was killed,
+ * Adds the entries, a page a transaction, in the order of the candidates; their pictures are kept already. Where some are there already, because a process was killed,
  * it goes on behind them. `onPage` hears how many there are.
  */
 export async function makeEntries(
   db: Kysely<DB>,
   frozen: Frozen,
-  keepStamp: KeepStamp,
   onPage: (entries: number) => Promise<void>,
 ): Promise<void> {
   const { release } = frozen
@@ -39,9 +35,8 @@ export async function makeEntries(
     const radii = await standingRadii(db, release.campaign_id, ids, { upTo })
     const pictures = { campaignId: release.campaign_id, recipeHash: release.recipe_hash }
     const stamps = new Map<number, Beside['stamps']>()
-    for (const { candidateId, ...stamp } of await listStampsToRelease(db, pictures, ids)) {
-      stamps.set(candidateId, [...(stamps.get(candidateId) ?? []), stamp])
-      await keepStamp(candidateId, stamp.sha256)
+    for (const { candidateId, view, sha256 } of await listStampsToRelease(db, pictures, ids)) {
+      stamps.set(candidateId, [...(stamps.get(candidateId) ?? []), { view, sha256 }])
     }
     const keys = fresh.map(({ designation }) => entryKey(designation!))
     const taken = await listTakenKeys(db, release.id, keys)

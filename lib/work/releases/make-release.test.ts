@@ -80,7 +80,7 @@ it('goes on where a process was killed, after whatever entry or file, and leaves
     }
     made = (await findReleaseById(scenario.db, id))?.made === 1
   }
-  expect(kills).toBe(1 + RELEASE_FILES.length + 3)
+  expect(kills).toBe(1 + 1 + RELEASE_FILES.length + 3)
   const entries = await listReleaseEntries(scenario.db, id, { after: 0, limit: 9 })
   expect(entries.map(({ row_number: row }) => row)).toEqual([1, 2, 3, 4, 5])
   expect(seen.size).toBe(RELEASE_FILES.length + 3)
@@ -94,14 +94,29 @@ it('does nothing to a release that is complete', async () => {
   })
 })
 
-it('keeps the pictures of its entries for good, and waits for one that is missing', async () => {
+it('keeps the pictures of its entries for good, and asks at once for all that are missing, by the recipe that they had', async () => {
   await threeJudged()
   const { db, tools } = scenario
   const { id } = await publishRelease(db, await scenario.permit(scenario.lead, 'lead'), RELEASE)
   const without = { ...tools, stampFolder: `${tools.stampFolder}-lost` }
-  await expect(makeRelease(without, id, async () => {})).rejects.toThrow(/picture was missing and is being made again/)
-  expect(await db.selectFrom('job').select('kind').execute()).toContainEqual({ kind: 'image-candidates' })
-  await makeRelease(tools, id, async () => {})
+  await expect(makeRelease(without, id, async () => {})).rejects.toThrow('2 pictures were missing and are being made')
+  const jobs = await db.selectFrom('job').select('payload').where('kind', '=', 'image-candidates').execute()
+  const { id: recipeId } = await db.selectFrom('recipe').select('id').executeTakeFirstOrThrow()
+  const confirmed = await db
+    .selectFrom('candidate')
+    .select('id')
+    .where('state', '=', 'confirmed')
+    .orderBy('id')
+    .execute()
+  expect(jobs.map(({ payload }) => JSON.parse(payload as string))).toContainEqual({
+    campaignId: scenario.campaign.id,
+    candidateIds: confirmed.map((candidate) => candidate.id),
+    recipeId,
+  })
+  expect(await listReleaseEntries(db, id, { after: 0, limit: 1 })).toEqual([])
+  const steps: number[] = []
+  await makeRelease(tools, id, async (done) => void steps.push(done))
+  expect(steps[0]).toBe(1)
   const [entry] = await listReleaseEntries(db, id, { after: 0, limit: 1 })
   expect(new TextDecoder().decode(await tools.blobs.read(entry.thumbnail!))).toBe('PNG of one')
   expect(JSON.parse(entry.stamps)).toEqual({ colour: entry.thumbnail })

@@ -8,10 +8,9 @@ import type { DB } from '@/db/schema'
 import type { ReleaseFile } from '@/db/schema/releases'
 import { fromJson } from '@/db/schema/values'
 import type { BlobStore } from '@/lib/platform/storage/blob-store'
-import { requestImaging } from '@/lib/work/stamps/commit-outcomes'
-import { readStamp } from '@/lib/work/stamps/stamp-store'
 import { changesInWords, type Change } from './changes'
-import { makeEntries, type KeepStamp } from './make-entries'
+import { keepStamps } from './keep-stamps'
+import { makeEntries } from './make-entries'
 import { readFrozen } from './read-frozen'
 import { releaseAddress } from './release-address'
 import { ARCHIVE_TYPE, CHECKSUMS, RELEASE_FILES, STAMPS } from './release-files'
@@ -37,7 +36,8 @@ export async function makeRelease(tools: ReleaseTools, releaseId: number, progre
   if (!release || release.made === 1 || release.givenUpReason !== null) return
   const total = release.entries + RELEASE_FILES.length + 3
   const frozen = await readFrozen(db, release)
-  await makeEntries(db, frozen, keepStamps(tools, release), (entries) => progress(entries, total))
+  await keepStamps(tools, release, () => progress(1, total))
+  await makeEntries(db, frozen, (entries) => progress(entries, total))
   const files = new FileKeeper(tools, release, async (made) => progress(release.entries + made, total))
   await files.open()
   const stamps = await files.keep(STAMPS.name, STAMPS.mediaType, () => zipOf(stampMembers(tools, release)))
@@ -91,19 +91,6 @@ class FileKeeper {
 async function* encoded(pieces: AsyncIterable<string> | Iterable<string>): AsyncGenerator<Uint8Array, void, void> {
   const encoder = new TextEncoder()
   for await (const piece of pieces) yield encoder.encode(piece)
-}
-
-/** Stamps can be made again and so are not kept for good; those of a release are copied among the blobs. */
-function keepStamps({ db, blobs, stampFolder }: ReleaseTools, release: ReleaseRow): KeepStamp {
-  return async (candidateId, sha256) => {
-    if (await blobs.has(sha256)) return
-    const bytes = await readStamp(stampFolder, sha256)
-    if (!bytes) {
-      await requestImaging(db, release.campaign_id, [candidateId])
-      throw new Error('A picture was missing and is being made again. The release goes on by itself in a moment.')
-    }
-    await blobs.put(bytes)
-  }
 }
 
 /** `<entry key>/<view>.png`; a band's view `band:g` is `band-g`, since a colon is no name on every system. */
