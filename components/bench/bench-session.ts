@@ -6,6 +6,7 @@ import type { GradeLetter } from '@/db/schema/grading'
 import type { CannotJudgeReason, Tag } from '@/lib/work/grading/tags'
 import type { BenchCandidate } from '@/lib/work/queue/lend-next'
 import { firstView } from './first-view'
+import { isLook, lookIdOf, type LookId } from './look-id'
 import { called, corrected, foundWaiting, givenElsewhere, recalled } from './session-recall'
 
 export interface Draft {
@@ -29,18 +30,6 @@ export interface Look {
   /** When it was first given, milliseconds since 1970: the order of undo. */
   at: number
 }
-
-/** Which look it was: a candidate that came back turned is looked at twice. */
-export interface LookId {
-  candidateId: number
-  turned?: number
-}
-
-export const lookIdOf = ({ id, turned }: Pick<BenchCandidate, 'id' | 'turned'>): LookId =>
-  turned ? { candidateId: id, turned } : { candidateId: id }
-
-export const isLook = ({ candidate }: Pick<Look, 'candidate'>, { candidateId, turned }: LookId): boolean =>
-  candidate.id === candidateId && (candidate.turned ?? 0) === (turned ?? 0)
 
 /** 'dry': the server had fewer than asked for, although more is left: it lies on other people's benches. */
 export type Supply = 'ready' | 'asking' | 'dry' | 'failed'

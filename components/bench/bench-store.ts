@@ -1,6 +1,7 @@
 /** The database of this browser in which the bench keeps what must survive a reload, told apart by campaign and person. */
 import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
-import { lookIdOf, type Look } from './bench-session'
+import type { Look } from './bench-session'
+import { lookIdOf } from './look-id'
 import type { MarkInput } from '@/lib/work/sheet/mark-input'
 import type { RefusedGrade, WaitingGrade } from './grade-outbox'
 

@@ -1,6 +1,7 @@
 /** What comes into a sitting from outside it: earlier visits, other tabs, and what the server says of an earlier answer. */
-import { isLook, lookIdOf, type Answer, type BenchSession, type Draft, type Look, type LookId } from './bench-session'
+import type { Answer, BenchSession, Draft, Look } from './bench-session'
 import { firstView } from './first-view'
+import { isLook, lookIdOf, type LookId } from './look-id'
 
 /** Grades of an earlier visit that are still on their way: the server does not count them yet. */
 export function foundWaiting(session: BenchSession, candidateIds: readonly number[], firsts: number): BenchSession {
