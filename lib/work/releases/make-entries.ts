@@ -18,10 +18,12 @@ interface Beside {
 /**
  * Adds the entries, a page a transaction, in the order of the candidates; their pictures are kept already. Where some are there already, because a process was killed,
  * it goes on behind them. `onPage` hears how many there are.
+ * @throws Error where a picture is not kept: nothing names one that is not there.
  */
 export async function makeEntries(
   db: Kysely<DB>,
   frozen: Frozen,
+  isKept: (sha256: string) => Promise<boolean>,
   onPage: (entries: number) => Promise<void>,
 ): Promise<void> {
   const { release } = frozen
@@ -36,6 +38,7 @@ export async function makeEntries(
     const pictures = { campaignId: release.campaign_id, recipeHash: release.recipe_hash }
     const stamps = new Map<number, Beside['stamps']>()
     for (const { candidateId, view, sha256 } of await listStampsToRelease(db, pictures, ids)) {
+      if (!(await isKept(sha256))) throw new Error('A picture was drawn anew meanwhile. The release goes on by itself.')
       stamps.set(candidateId, [...(stamps.get(candidateId) ?? []), { view, sha256 }])
     }
     const keys = fresh.map(({ designation }) => entryKey(designation!))

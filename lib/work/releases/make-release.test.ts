@@ -1,10 +1,13 @@
 import { createHash } from 'node:crypto'
+import { mkdir, rm, writeFile } from 'node:fs/promises'
+import path from 'node:path'
 import { afterEach, expect, it, vi } from 'vitest'
 import { listReleaseEntries } from '@/db/queries/releases'
 import { addGraded, makeReleaseScenario, publishAndMake, readText, type ReleaseScenario } from './_release-scenario'
 import { Readable } from 'node:stream'
 import { findReleaseById, listReleaseFiles } from '@/db/queries/releases'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
+import { stampPath } from '@/lib/work/stamps/stamp-store'
 import { makeRelease } from './make-release'
 import { publishRelease } from './publish-release'
 import { RELEASE } from './_release-scenario'
@@ -120,6 +123,58 @@ it('keeps the pictures of its entries for good, and asks at once for all that ar
   const [entry] = await listReleaseEntries(db, id, { after: 0, limit: 1 })
   expect(new TextDecoder().decode(await tools.blobs.read(entry.thumbnail!))).toBe('PNG of one')
   expect(JSON.parse(entry.stamps)).toEqual({ colour: entry.thumbnail })
+})
+
+it('makes no entry with a picture that was drawn anew while the others were copied, and goes on with the new one', async () => {
+  await threeJudged()
+  const { db, tools } = scenario
+  const { id } = await publishRelease(db, await scenario.permit(scenario.lead, 'lead'), RELEASE)
+  const drawn = new TextEncoder().encode('PNG of one, corrected')
+  const sha256 = createHash('sha256').update(drawn).digest('hex')
+  const drawAnew = async () => {
+    const { id: one } = await db
+      .selectFrom('candidate')
+      .select('id')
+      .where('name', '=', 'one')
+      .executeTakeFirstOrThrow()
+    await db.updateTable('stamp').set({ sha256 }).where('candidate_id', '=', one).execute()
+  }
+  await expect(makeRelease(tools, id, drawAnew)).rejects.toThrow('drawn anew meanwhile')
+  expect(await listReleaseEntries(db, id, { after: 0, limit: 9 })).toEqual([])
+  await mkdir(path.dirname(stampPath(tools.stampFolder, sha256)), { recursive: true })
+  await writeFile(stampPath(tools.stampFolder, sha256), drawn)
+  await makeRelease(tools, id, async () => {})
+  const [entry] = await listReleaseEntries(db, id, { after: 0, limit: 9 })
+  expect(entry.thumbnail).toBe(sha256)
+  expect((await findReleaseById(db, id))?.made).toBe(1)
+})
+
+it('makes a file again, the same, whose bytes were lost before the archive was there', async () => {
+  await threeJudged()
+  const { db, tools } = scenario
+  const { id } = await publishRelease(db, await scenario.permit(scenario.lead, 'lead'), RELEASE)
+  const lose = async (done: number, total: number) => {
+    if (done === total - 1) throw new Error('killed')
+  }
+  await expect(makeRelease(tools, id, lose)).rejects.toThrow('killed')
+  const before = await listReleaseFiles(db, id)
+  expect(before.map(({ name }) => name)).toContain('README.txt')
+  expect(before.map(({ name }) => name)).not.toContain('RELEASE.zip')
+  for (const { sha256 } of before) await rm(tools.blobs.pathOf(sha256), { force: true })
+  await makeRelease(tools, id, async () => {})
+  for (const { name, sha256 } of before) expect(await tools.blobs.has(sha256), name).toBe(true)
+  expect((await findReleaseById(db, id))?.made).toBe(1)
+})
+
+it('names the recipe of its pictures', async () => {
+  await threeJudged()
+  const { files } = await publishAndMake(scenario)
+  const { hash } = await scenario.db.selectFrom('recipe').select('hash').executeTakeFirstOrThrow()
+  expect(JSON.parse(await readText(scenario, files, 'rule.json'))).toMatchObject({
+    recipeSha256: hash,
+    candidates: 3,
+    entries: 2,
+  })
 })
 
 it('is as of the freeze: what is graded, ruled or renamed afterwards is in the next one', async () => {

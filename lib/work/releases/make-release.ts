@@ -37,7 +37,12 @@ export async function makeRelease(tools: ReleaseTools, releaseId: number, progre
   const total = release.entries + RELEASE_FILES.length + 3
   const frozen = await readFrozen(db, release)
   await keepStamps(tools, release, () => progress(1, total))
-  await makeEntries(db, frozen, (entries) => progress(entries, total))
+  await makeEntries(
+    db,
+    frozen,
+    (sha256) => tools.blobs.has(sha256),
+    (entries) => progress(entries, total),
+  )
   const files = new FileKeeper(tools, release, async (made) => progress(release.entries + made, total))
   await files.open()
   const stamps = await files.keep(STAMPS.name, STAMPS.mediaType, () => zipOf(stampMembers(tools, release)))
