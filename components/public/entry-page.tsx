@@ -1,4 +1,5 @@
 import { day } from '@/components/campaigns/in-words'
+import { StampOverlay } from '@/components/ui/stamp-overlay'
 import { VoteStrip } from '@/components/ui/vote-strip'
 import { viewLabel } from '@/lib/science/imaging/recipe'
 import { formatDeclination, formatRightAscension } from '@/lib/science/sky/coordinates'
@@ -46,7 +47,7 @@ export function EntryPage({
         </p>
         <ReleaseNotices head={head} links={links} />
       </header>
-      <Stamps entry={entry} links={links} />
+      <Stamps entry={entry} geometries={page.geometries} links={links} />
       <div className="grid gap-x-12 gap-y-8 lg:grid-cols-2">
         <section aria-labelledby="verdict" className="flex flex-col gap-4">
           <h2 id="verdict" className="text-title font-semibold">
@@ -132,7 +133,15 @@ export function EntryPage({
 }
 
 /** All views on the black tray, captions in the tray and not on the pictures; the first is the large one. */
-function Stamps({ entry, links }: { entry: EntryDetail; links: ReleaseLinks }) {
+function Stamps({
+  entry,
+  geometries,
+  links,
+}: {
+  entry: EntryDetail
+  geometries: Entry['geometries']
+  links: ReleaseLinks
+}) {
   const { stamps, thumbnail, designation, key } = entry
   if (stamps.length === 0) return <p className="text-small text-mute">This release has no pictures of it.</p>
   const first = stamps.find(({ sha256 }) => sha256 === thumbnail) ?? stamps[0]
@@ -145,19 +154,31 @@ function Stamps({ entry, links }: { entry: EntryDetail; links: ReleaseLinks }) {
       {views.map(({ view, sha256 }, at) => (
         <li key={view} className={at === 0 ? 'col-span-2 row-span-2' : ''}>
           <figure className="m-0">
-            <img
-              src={links.stamp(key, sha256)}
-              alt={`${designation}, ${viewLabel(view)}`}
-              width={at === 0 ? 480 : 240}
-              height={at === 0 ? 480 : 240}
-              fetchPriority={at === 0 ? 'high' : 'auto'}
-              decoding="async"
-              className="pixelated aspect-square h-auto w-full bg-black object-contain"
-            />
-            <figcaption className="pt-1 text-note text-tray-text">{viewLabel(view)}</figcaption>
+            <span className="relative block">
+              <img
+                src={links.stamp(key, sha256)}
+                alt={`${designation}, ${viewLabel(view)}`}
+                width={at === 0 ? 480 : 240}
+                height={at === 0 ? 480 : 240}
+                fetchPriority={at === 0 ? 'high' : 'auto'}
+                decoding="async"
+                className="pixelated aspect-square h-auto w-full bg-black object-contain"
+              />
+              {geometries[view] ? <StampOverlay {...geometries[view]} /> : null}
+            </span>
+            <figcaption className="pt-1 text-note text-tray-text">
+              {viewLabel(view)}
+              {geometries[view] ? <span className="figures">{fieldInWords(geometries[view])}</span> : null}
+            </figcaption>
           </figure>
         </li>
       ))}
     </ul>
   )
+}
+
+/** Its longer side on the sky. */
+function fieldInWords({ width, height, geometry }: Entry['geometries'][string]): string {
+  const { pixelScaleArcsec: scale } = geometry
+  return scale === null ? '' : `, ${(Math.max(width, height) * scale).toFixed(1)}″ across`
 }

@@ -28,6 +28,7 @@ export function ReleaseNotices({ head, links }: { head: ReleaseHead; links: Rele
             `Release ${notice.number}, which is not open yet,`
           )}{' '}
           says why: {notice.statement}
+          {notice.isWithdrawn ? ` Release ${notice.number} was withdrawn in its turn: do not use it either.` : ''}
         </Said>
       ))}
       {corrects ? (

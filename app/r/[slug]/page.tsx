@@ -33,7 +33,7 @@ export default async function Page(props: Props) {
         <p className="max-w-2xl text-mute">
           {standing
             ? `Release ${standing.number} is the newest that stands. ${path}/newest always leads to it, and ${path}/newest/cone is its cone search.`
-            : 'Each of its public releases is withdrawn. What was wrong stands on their pages.'}
+            : 'Each of its public releases is withdrawn, or has an erratum that is. What was wrong stands on their pages.'}
         </p>
         {standing ? (
           <p>

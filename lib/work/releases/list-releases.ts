@@ -59,7 +59,7 @@ export async function releaseList(db: Kysely<DB>, permit: CampaignPermit<'read'>
       notices: releases
         .filter(({ corrects_id: of, givenUpReason }) => of === release.id && givenUpReason === null)
         .toReversed()
-        .flatMap(noticeOf),
+        .flatMap((notice) => noticeOf(notice, releases)),
       files: (await listReleaseFiles(db, release.id)).map(({ name, bytes, sha256 }) => ({ name, bytes, sha256 })),
     })),
   )
@@ -67,8 +67,12 @@ export async function releaseList(db: Kysely<DB>, permit: CampaignPermit<'read'>
 
 const isBeingMade = ({ made, givenUpReason }: ReleaseRow): boolean => made === 0 && givenUpReason === null
 
-function noticeOf({ number, kind, statement }: ReleaseRow): ReleaseNotice[] {
-  return kind === 'release' ? [] : [{ number, kind, statement: statement ?? '', isOpen: true }]
+function noticeOf({ id, number, kind, statement }: ReleaseRow, releases: readonly ReleaseRow[]): ReleaseNotice[] {
+  if (kind === 'release') return []
+  const isWithdrawn = releases.some(
+    (one) => one.corrects_id === id && one.kind === 'retraction' && one.made === 1 && one.givenUpReason === null,
+  )
+  return [{ number, kind, statement: statement ?? '', isOpen: true, isWithdrawn }]
 }
 
 type Making = NonNullable<ListedRelease['making']>

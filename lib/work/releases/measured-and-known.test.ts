@@ -12,7 +12,7 @@ import { addPicturedCandidate } from '@/tests/_support/pictured-candidate'
 import { makeReleaseScenario, publishAndMake, readText, RELEASE, type ReleaseScenario } from './_release-scenario'
 import { makeRelease } from './make-release'
 import { publishRelease } from './publish-release'
-import { readReleaseTable } from './read-release-page'
+import { readEntryPage, readReleaseTable } from './read-release-page'
 import { readTableQuery } from './table-query'
 
 let scenario: ReleaseScenario
@@ -171,4 +171,25 @@ it('says in README what a class is, when a candidate is open or split, and the c
   expect(readme).toMatch(/split where the mean lies in between or .*; open while grades are lacking/)
   expect(readme.match(/\bflat\b/g)).toHaveLength(1)
   expect(readme).toMatch(/RELEASE.zip holds it and so is not in it/)
+})
+
+it('shows how its pictures lie on the sky, as long as they are those that the campaign has', async () => {
+  const { release } = await publishAndMake(scenario)
+  const [entry] = await entriesOf(release.id)
+  const { geometries } = await readEntryPage(scenario.db, release, entry.entry_key)
+  expect(Object.keys(geometries).toSorted()).toEqual(Object.keys(fromJson(entry.stamps)).toSorted())
+  expect(geometries.colour).toMatchObject({ width: 80, height: 80, geometry: { pixelScaleArcsec: 0.2 } })
+  const other = 'f'.repeat(64)
+  await scenario.db.updateTable('stamp').set({ sha256: other }).where('view', '=', 'colour').execute()
+  const after = (await readEntryPage(scenario.db, release, entry.entry_key)).geometries
+  expect(after.colour).toBeUndefined()
+})
+
+it('tells in README of a retraction nothing of a catalogue that is not there', async () => {
+  await publishAndMake(scenario)
+  const { files } = await publishAndMake(scenario, { kind: 'retraction', corrects: 1, statement: 'Wrong field.' })
+  const readme = await readText(scenario, files, 'README.txt')
+  expect(readme).toContain('A retraction holds no catalogue: its tables are empty.')
+  expect(readme).not.toMatch(/0 entries|Verdicts:|Cosmology|recipe|RECOMPUTED/)
+  expect(readme).not.toContain('\n\n\n')
 })

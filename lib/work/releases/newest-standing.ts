@@ -11,7 +11,7 @@ export const NEWEST = 'newest'
 export interface PublicReleases {
   /** Newest first. */
   releases: PublicRelease[]
-  /** The newest that has a catalogue and has not been withdrawn; null where none is left. */
+  /** The newest that has a catalogue, has not been withdrawn and has no open erratum; null where none is left. */
   standing: ReleaseRow | null
 }
 
@@ -47,7 +47,12 @@ async function withFates(db: Kysely<DB>, rows: readonly ReleaseRow[]): Promise<P
       retractedBy: notices.find(({ kind }) => kind === 'retraction')?.number ?? null,
     })
   }
-  const standing = releases.find(({ release, retractedBy }) => release.kind !== 'retraction' && retractedBy === null)
+  // Once its erratum has been open a release is known to be wrong, and does not stand again when the erratum is withdrawn.
+  const opened = new Set(releases.map(({ release }) => release.number))
+  const standing = releases.find(
+    ({ release, correctedBy, retractedBy }) =>
+      release.kind !== 'retraction' && retractedBy === null && !correctedBy.some((number) => opened.has(number)),
+  )
   return { releases, standing: standing?.release ?? null }
 }
 

@@ -24,6 +24,7 @@ import { licenceOf } from './licences'
 import { publicReleases, releaseNumber } from './newest-standing'
 import { entryDetail, entryRow, type EntryDetail, type EntryRow } from './read-entry'
 import { noticesOf, releaseToRead, type Reader, type ReleaseNotice } from './read-release'
+import { releasedGeometries, type ReleasedGeometry } from './released-geometries'
 import { releaseFileAbout } from './release-file-about'
 import { searchCone } from './search-cone'
 import type { TableQuery } from './table-query'
@@ -194,6 +195,8 @@ export async function readReleaseContents(db: Kysely<DB>, release: ReleaseRow): 
 
 export interface EntryPage {
   entry: EntryDetail
+  /** By view. Only of pictures that are the same to the last byte as those that the campaign has now, whose geometry is known. */
+  geometries: Record<string, ReleasedGeometry>
   row: ReleaseEntry
   before: EntryBeside | null
   after: EntryBeside | null
@@ -218,6 +221,7 @@ export async function readEntryPage(db: Kysely<DB>, release: ReleaseRow, key: st
   const keys = new Map(inOthers.map(({ releaseId, key: otherKey }) => [releaseId, otherKey]))
   return {
     entry: entryDetail(row),
+    geometries: await releasedGeometries(db, release, row),
     row,
     before: beside.find(({ rowNumber }) => rowNumber < row.row_number) ?? null,
     after: beside.find(({ rowNumber }) => rowNumber > row.row_number) ?? null,

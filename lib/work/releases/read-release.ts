@@ -40,6 +40,8 @@ export interface ReleaseNotice {
   statement: string
   /** Whether this reader may read that release too. */
   isOpen: boolean
+  /** That release was withdrawn in its turn. */
+  isWithdrawn: boolean
 }
 
 /**
@@ -51,7 +53,10 @@ export async function noticesOf(db: Kysely<DB>, release: ReleaseRow, reader: Rea
   for (const later of await listNoticesOf(db, release.id)) {
     if (later.kind === 'release' || later.made === 0) continue
     const isOpen = await mayRead(db, later, reader)
-    notices.push({ number: later.number, kind: later.kind, statement: later.statement ?? '', isOpen })
+    const isWithdrawn = (await listNoticesOf(db, later.id)).some(
+      ({ kind, made }) => kind === 'retraction' && made === 1,
+    )
+    notices.push({ number: later.number, kind: later.kind, statement: later.statement ?? '', isOpen, isWithdrawn })
   }
   return notices
 }

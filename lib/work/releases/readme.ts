@@ -25,6 +25,20 @@ export function readmeText(
           release.statement ?? '',
           '',
         ]
+  const isRetraction = release.kind === 'retraction'
+  const model = cosmology.model === 'flat LCDM' ? cosmology.model : `${cosmology.model} (flat LCDM)`
+  const held = isRetraction
+    ? ['A retraction holds no catalogue: its tables are empty.']
+    : [
+        `${release.entries} entries; ${release.candidates} judged candidates.`,
+        more.changes,
+        '',
+        `Verdicts: ${ruleInWords(rule)}`,
+        `Class of an entry: ${GRADE_CLASS_RULE}. ${GRADE_MEANINGS}`,
+        `Cosmology of masses and delays in measurements.csv: ${model}, H0 = ${cosmology.hubbleConstant} km/s/Mpc, ` +
+          `Omega_m = ${cosmology.omegaMatter}; a measurement that was made in another one says so.`,
+        ...(release.recipe_hash ? [`Pictures were made by the recipe with the SHA-256 ${release.recipe_hash}.`] : []),
+      ]
   return [
     release.title,
     `Release ${release.number} of the campaign "${release.campaign_name}", ${release.survey}`,
@@ -37,13 +51,7 @@ export function readmeText(
     '',
     release.description,
     '',
-    `${release.entries} entries; ${release.candidates} judged candidates.`,
-    more.changes,
-    '',
-    `Verdicts: ${ruleInWords(rule)}`,
-    `Class of an entry: ${GRADE_CLASS_RULE}. ${GRADE_MEANINGS}`,
-    `Cosmology of masses and delays in measurements.csv: ${cosmology.model === 'flat LCDM' ? 'flat LCDM' : `${cosmology.model} (flat LCDM)`}, H0 = ${cosmology.hubbleConstant} km/s/Mpc, Omega_m = ${cosmology.omegaMatter}; a measurement that was made in another one says so.`,
-    ...(release.recipe_hash ? [`Pictures were made by the recipe with the SHA-256 ${release.recipe_hash}.`] : []),
+    ...held,
     '',
     'AUTHORS',
     release.authors,
@@ -63,8 +71,12 @@ export function readmeText(
     'People stand under pseudonyms, which are the same in every release of this campaign. Calibration stamps, which measure graders, are',
     'in no file; of them graders.csv has how often each grader gave which grade.',
     '',
-    'EVERY VERDICT CAN BE RECOMPUTED from grades.csv, graders.csv and rule.json: in a copy of Ringside',
-    '    npm run reproduce -- RELEASE.zip',
-    '',
+    ...(isRetraction
+      ? []
+      : [
+          'EVERY VERDICT CAN BE RECOMPUTED from grades.csv, graders.csv and rule.json: in a copy of Ringside',
+          '    npm run reproduce -- RELEASE.zip',
+          '',
+        ]),
   ].join('\n')
 }

@@ -95,7 +95,7 @@ it('tells whoever reads a release of its errata and its retraction, opened or no
   const { id } = await publishRelease(scenario.db, permit, erratum)
   expect(await noticesOf(scenario.db, release, anybody)).toEqual([])
   await makeRelease(scenario.tools, id, async () => {})
-  const told = { number: 2, kind: 'erratum', statement: 'Positions were off.' }
+  const told = { number: 2, kind: 'erratum', statement: 'Positions were off.', isWithdrawn: false }
   expect(await noticesOf(scenario.db, release, anybody)).toEqual([{ ...told, isOpen: false }])
   const reader = { viewer: scenario.reader, token: null }
   expect(await noticesOf(scenario.db, release, reader)).toEqual([{ ...told, isOpen: true }])
@@ -121,6 +121,24 @@ it('passes over what was withdrawn, though the retraction is private, where the 
     [2, 3],
     [1, null],
   ])
+})
+
+it('lets nothing stand whose erratum was open, though the erratum is withdrawn, and tells that it is', async () => {
+  const { release } = await publishAndMake(scenario)
+  await open(1, { access: 'public', acronymRegistered: true })
+  await publishAndMake(scenario, { kind: 'erratum', corrects: 1, statement: 'Positions were off.' })
+  const standing = async () => (await publicReleases(scenario.db, scenario.campaign.slug)).standing?.number ?? null
+  expect(await standing()).toBe(1)
+  await open(2, { access: 'public', acronymRegistered: true })
+  expect(await standing()).toBe(2)
+  await publishAndMake(scenario, { kind: 'retraction', corrects: 2, statement: 'Wrong field.' })
+  expect(await standing()).toBeNull()
+  expect(await noticesOf(scenario.db, release, { viewer: null, token: null })).toMatchObject([
+    { number: 2, isWithdrawn: true },
+  ])
+  await publishAndMake(scenario)
+  await open(4, { access: 'public', acronymRegistered: true })
+  expect(await standing()).toBe(4)
 })
 
 it('serves the bytes that its hash names, and no file that it does not have', async () => {
