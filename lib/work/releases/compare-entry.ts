@@ -1,6 +1,7 @@
 import type { Grade } from '@/lib/science/agreement/grades'
 import type { Judged } from '@/lib/work/consensus/judge'
 import { gradeClass } from '@/lib/work/catalogue/grade-class'
+import { inOneTurn } from './in-one-turn'
 
 /** One thing that the release says otherwise than its grades. */
 export interface Difference {
@@ -66,7 +67,7 @@ export function compareEntry(
   const isRuled = candidate.ruling !== ''
   const rulingGrade = isRuled && candidate.ruling_grade !== '' ? (candidate.ruling_grade as 'A' | 'B' | 'C') : null
   check.text('designation', 'designation', candidate.designation)
-  check.number('right ascension', 'ra', ((Number(candidate.ra) % 360) + 360) % 360)
+  check.number('right ascension', 'ra', inOneTurn(Number(candidate.ra)))
   check.number('declination', 'dec', Number(candidate.dec))
   check.text('class', 'grade_class', gradeClass(rulingGrade, judgement.mean) ?? '')
   check.number('mean', 'mean_points', judgement.mean)

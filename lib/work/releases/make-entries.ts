@@ -8,6 +8,7 @@ import { gradeClass } from '@/lib/work/catalogue/grade-class'
 import { standingRadii, type StandingRadius } from '@/lib/work/measuring/standing-radii'
 import { entryKey, freeKey } from './entry-key'
 import { remarksInText } from '@/lib/work/catalogue/remarks'
+import { inOneTurn } from './in-one-turn'
 import { releasedCandidates, type Frozen, type ReleasedCandidate } from './read-frozen'
 
 interface Beside {
@@ -102,9 +103,6 @@ function entryOf(candidate: ReleasedCandidate, { radius, stamps }: Beside): Entr
     stamps: toJson(Object.fromEntries(stamps.map(({ view, sha256 }) => [view, sha256]))),
   }
 }
-
-/** The same right ascension from 0 to less than 360 degrees; one that is there already stays to the last bit. */
-const inOneTurn = (raDeg: number): number => (raDeg >= 0 && raDeg < 360 ? raDeg : (((raDeg % 360) + 360) % 360) % 360)
 
 function countedTags(tags: readonly string[]): string | null {
   const counts = new Map<string, number>()
