@@ -208,7 +208,7 @@ it('the bench: a candidate with all that opens, waiting grades, a refusal, a bre
   await lookAt(page, 'bench-did-not-come')
   await page.unroute('**/queue?*')
   await open(page, BENCH)
-  for (let n = 0; n < CANDIDATES && (await headingOf(page))?.startsWith('SWS'); n++) await giveGrade(page, 'n')
+  for (let n = 0; n < CANDIDATES && (await headingOf(page))?.startsWith('No. '); n++) await giveGrade(page, 'n')
   await heading(page, 'Nothing is left for you')
   await lookAt(page, 'bench-nothing-left')
   expect(surprises(errors)).toEqual([])

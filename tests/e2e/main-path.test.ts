@@ -3,6 +3,7 @@ import { readFile } from 'node:fs/promises'
 import Papa from 'papaparse'
 import type { Browser, BrowserContext, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { candidateNumber } from '@/lib/work/campaigns/candidate-number'
 import { collectErrors, expectAccessible, launchBrowser } from './_browser'
 import { deliveries } from './_deliveries'
 import { makeDataFolder, removeDataFolder, startTestServer, type TestServer } from './_server'
@@ -148,14 +149,18 @@ describe('the main path', () => {
   })
 
   it('lets three graders grade everything by keyboard at the same time, each candidate three times in all', async () => {
+    const listed = await lead.request.get(`${server.url}/api/campaigns/marsh-test/candidates`)
+    const { candidates } = (await listed.json()) as { candidates: { id: number; name: string }[] }
+    const nameOf = new Map(candidates.map(({ id, name }) => [candidateNumber(id), name]))
     const gradeAll = async (page: Page, grader: number) => {
       // Keys are heard once the page's script runs.
       await page.goto(`${server.url}${HOME}/bench`, { waitUntil: 'networkidle' })
       const seen: string[] = []
       for (let n = 0; n < delivered.names.length; n++) {
         const heading = page.locator('h1')
-        await expect.poll(() => heading.textContent(), { timeout: 20_000 }).toMatch(/^SWS\d{4}$/)
-        const name = (await heading.textContent())!
+        await expect.poll(() => heading.textContent(), { timeout: 20_000 }).toMatch(/^No\. \d+$/)
+        const number = (await heading.textContent())!
+        const name = nameOf.get(number)!
         seen.push(name)
         await untilGradable(page)
         if (grader === 0 && name === delivered.names[0]) {
@@ -166,7 +171,7 @@ describe('the main path', () => {
           await page.waitForTimeout(700)
         }
         await page.keyboard.press(letterFor(name, grader).toLowerCase())
-        await expect.poll(() => heading.textContent(), { timeout: 20_000 }).not.toBe(name)
+        await expect.poll(() => heading.textContent(), { timeout: 20_000 }).not.toBe(number)
       }
       await expect.poll(() => page.getByText('All grades saved').count(), { timeout: 20_000 }).toBeGreaterThan(0)
       return seen

@@ -70,7 +70,7 @@ it('sends on by key what the bench then serves, and keeps marks while the networ
   await page.keyboard.press('n')
   await page.getByText(`${CANDIDATES - 1} stamps go no further, 1 to the bench.`).waitFor()
   await page.keyboard.press('n')
-  await page.getByText('The server cannot be reached.').waitFor()
+  await page.getByRole('alert').getByText('The server cannot be reached.').waitFor()
   expect(await waiting(page)).toBe(CANDIDATES - 1)
   await context.setOffline(false)
   await page.reload({ waitUntil: 'networkidle' })
