@@ -17,7 +17,7 @@ export const labelsInWords = (entry: Pick<ReleaseEntry, 'known_as'>): string | n
     .join('; ') || null
 
 /** No reference list whose objects are kept out of new lists knows it. */
-export const isNew = (entry: Pick<ReleaseEntry, 'known_as'>): boolean =>
+const isNew = (entry: Pick<ReleaseEntry, 'known_as'>): boolean =>
   fromJson(entry.known_as).every(({ keptOutOfNew }) => keptOutOfNew === false)
 
 /** The columns of a released catalogue in every format and in its cone search. Names are kept stable. */

@@ -101,7 +101,7 @@ it.each([
   })
   const answer = await reproduce(copy)
   expect(answer.differences).toContainEqual(expect.objectContaining({ candidate: 'SWS 1, "é"', what }))
-  expect(inWords(answer)[1]).toMatch(/verdicts do NOT agree/)
+  expect(inWords(answer)[1]).toMatch(/verdicts do(es)? NOT agree/)
 })
 
 it('finds calibration counts that were changed, since the probabilities rest on them', async () => {
@@ -246,4 +246,25 @@ it('releases no stamp, whatever the file', async () => {
   }
   expect(await zip.text('graders.csv')).toMatch(/^G02,no,8,0,0,1,1,0,0,0,0,0,1,/m)
   zip.close()
+})
+
+it.each([
+  ['catalogue.vot', '<TD>4</TD>', '<TD>3</TD>', 'n_grades in catalogue.vot'],
+  ['catalogue.json', '"n_grades":4', '"n_grades":3', 'n_grades in catalogue.json'],
+])('finds that %s says otherwise than catalogue.csv', async (file, before, after, what) => {
+  const copy = await tampered(await publish(MEAN), file, (text) => {
+    expect(text).toContain(before)
+    return text.replace(before, after)
+  })
+  const answer = await reproduce(copy)
+  expect(answer.differences).toEqual([expect.objectContaining({ what, released: '3', recomputed: '4' })])
+  expect(inWords(answer).slice(1)).toEqual([
+    '1 of 8 verdicts does NOT agree:',
+    expect.stringMatching(/n_grades in .* is released as 3, where 4 is expected/),
+  ])
+})
+
+it('finds a row that a copy of the catalogue lacks', async () => {
+  const copy = await tampered(await publish(MEAN), 'catalogue.json', (text) => text.replace(/\{"designation".*\n/, ''))
+  expect((await reproduce(copy)).differences.map(({ what }) => what)).toContain('the row of catalogue.json')
 })

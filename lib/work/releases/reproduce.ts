@@ -3,6 +3,7 @@ import Papa from 'papaparse'
 import { GRADES, type Answer } from '@/lib/science/agreement/grades'
 import type { RuleInForce } from '@/lib/work/campaigns/rule-in-force'
 import type { Judged } from '@/lib/work/consensus/judge'
+import { compareCopies } from './compare-copies'
 import { compareEntry, RowCheck, type Difference, type Row } from './compare-entry'
 import { judgeReleased, ReleasedGrades } from './judge-released'
 import { NotARelease, ReleaseZip } from './read-release-zip'
@@ -82,6 +83,8 @@ async function recompute(zip: ReleaseZip): Promise<Reproduction> {
     if (expected === found) continue
     differences.push({ candidate: file, what: 'rows', released: `${expected} by rule.json`, recomputed: `${found}` })
   }
+  // Beside a catalogue that was changed its copies tell nothing more.
+  if (differences.length === 0) differences.push(...(await compareCopies(zip, () => rows(zip, 'catalogue.csv'))))
   return { release, campaign, kind, verdicts, grades, differences }
 }
 

@@ -5,8 +5,8 @@ import { reproduce, type Reproduction } from './reproduce'
 const MOST_LISTED = 50
 
 const COMPARED =
-  'Compared: verdicts, states, numbers and places in candidates.csv and catalogue.csv. Not compared, since no grade tells them: remarks, ' +
-  'tags, known objects, measurements, redshifts; nor the copies of the catalogue as VOTable and JSON.'
+  'Compared: verdicts, states, numbers and places in candidates.csv and catalogue.csv, and the copies of the catalogue. Not compared, since no grade tells them: remarks, ' +
+  'tags, known objects, measurements, redshifts.'
 
 /** What is printed, and the exit code: 0 all agree, 1 some do not. */
 export function inWords({ release, campaign, kind, verdicts, grades, differences }: Reproduction): string[] {
@@ -20,12 +20,12 @@ export function inWords({ release, campaign, kind, verdicts, grades, differences
     .slice(0, MOST_LISTED)
     .map(
       ({ candidate, what, released, recomputed }) =>
-        `  ${candidate}: ${what} is released as ${released}, and the grades come to ${recomputed}`,
+        `  ${candidate}: ${what} is released as ${released}, where ${recomputed} is expected`,
     )
   const more = differences.length - listed.length
   return [
     `${which}: ${grades} grades.`,
-    `${differing} of ${verdicts} verdicts do NOT agree:`,
+    `${differing} of ${verdicts} verdicts ${differing === 1 ? 'does' : 'do'} NOT agree:`,
     ...listed,
     ...(more > 0 ? [`  and ${more} more differences`] : []),
   ]
