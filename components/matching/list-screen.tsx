@@ -30,6 +30,7 @@ export function ListScreen({
   takeInAction,
   changeAction,
   retireAction,
+  discardAction,
   bringBackAction,
 }: {
   slug: string
@@ -38,6 +39,7 @@ export function ListScreen({
   takeInAction: FormAction
   changeAction: FormAction
   retireAction: FormAction
+  discardAction: FormAction
   bringBackAction: FormAction
 }) {
   const [mapping, setMapping] = useState<ListMapping>(list.mapping ?? firstLook.mapping)
@@ -115,7 +117,16 @@ export function ListScreen({
             confirm="Bring it back"
             action={bringBackAction}
           />
-        ) : isReading ? null : (
+        ) : isReading ? null : list.state === 'draft' || (list.state === 'refused' && list.rows === 0) ? (
+          <ConfirmButton
+            label="Throw it away"
+            name={`Throw ${list.name} away`}
+            question={`Throw ${list.name} away?`}
+            consequence="It labels nothing yet. It goes from this page; the same file can be sent again."
+            confirm="Throw the list away"
+            action={discardAction}
+          />
+        ) : (
           <ConfirmButton
             label="Retire it"
             name={`Retire ${list.name}`}

@@ -7,14 +7,18 @@ import { powerOfTen, threeDigits } from './in-figures'
 function plain({ value, low, high }: Interval) {
   const decimals = threeDigits(value).split('.')[1]?.length ?? 0
   const ends = [low, high].map((end) => (decimals > 0 ? end.toFixed(decimals) : threeDigits(end)))
-  return { value: threeDigits(value), between: low === high ? null : ends.join(' to ') }
+  return { value: threeDigits(value), between: rangeOf({ low, high }, ends) }
 }
+
+/** Where the low end is 0 only the high one is measured. */
+const rangeOf = ({ low, high }: Pick<Interval, 'low' | 'high'>, [from, to]: string[]) =>
+  low === high ? null : low === 0 ? `below ${to}` : `${from} to ${to}`
 
 /** One power of ten for the value and both ends. */
 function mass({ value, low, high }: Interval) {
   const exponent = Math.floor(Math.log10(value))
   const ends = [low, high].map((end) => (end / 10 ** exponent).toFixed(2))
-  return { value: powerOfTen(value, exponent), between: low === high ? null : ends.join(' to ') }
+  return { value: powerOfTen(value, exponent), between: rangeOf({ low, high }, ends) }
 }
 
 const RANGES =

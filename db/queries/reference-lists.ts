@@ -61,6 +61,16 @@ export async function updateList(
   return numUpdatedRows > 0n
 }
 
+/** Takes a list away of which nothing was ever in force; returns whether it was one. */
+export async function deleteUnusedList(db: Kysely<DB>, listId: number): Promise<boolean> {
+  const { numAffectedRows } = await sql`
+    delete from reference_list where id = ${listId} and state in ('draft', 'refused')
+      and not exists (select 1 from reference_object where list_id = ${listId})
+      and not exists (select 1 from object_match where list_id = ${listId})
+      and not exists (select 1 from match_decision where list_id = ${listId})`.execute(db)
+  return (numAffectedRows ?? 0n) > 0n
+}
+
 export interface ListOfCampaign extends ReferenceList {
   uploadedBy: string
   /** Candidates that a match of this list stands of. */

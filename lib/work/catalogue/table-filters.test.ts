@@ -64,6 +64,8 @@ describe('filters of everybody who may see all', () => {
       ['zsource', { kind: 'missing' }, ['two', 'three']],
       ['einstein', { kind: 'range', least: 1, most: 1.5 }, ['one']],
       ['einstein', { kind: 'range', least: 1, most: 1.5, below: true }, []],
+      ['einstein', { kind: 'range', least: 1.5, most: 2 }, ['one']],
+      ['einstein', { kind: 'range', least: 1.5, most: 2, above: true }, []],
       ['einstein', { kind: 'missing' }, ['two', 'three']],
       ['known', among('known'), ['one']],
       ['known', among('new'), ['two', 'three']],

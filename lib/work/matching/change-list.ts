@@ -1,7 +1,7 @@
 import 'server-only'
 import type { Kysely } from 'kysely'
 import { insertAllDue } from '@/db/queries/matching'
-import { findList, isBeingRead, setMatchRadius, updateList } from '@/db/queries/reference-lists'
+import { deleteUnusedList, findList, isBeingRead, setMatchRadius, updateList } from '@/db/queries/reference-lists'
 import type { DB } from '@/db/schema'
 import type { ListMapping, ReferenceList } from '@/db/schema/matching'
 import { toJson } from '@/db/schema/values'
@@ -102,6 +102,18 @@ export async function retireList(db: Kysely<DB>, permit: Lead, listId: number): 
       throw conflict('retired', `${name} is retired already.`)
     }
     await record(transaction, permit, 'matching.list-retired', name, { list: listId })
+    return { name }
+  })
+}
+
+/** Takes away a list that was never in force, as after a wrong file; the record keeps that it was sent and thrown away. */
+export async function discardList(db: Kysely<DB>, permit: Lead, listId: number): Promise<{ name: string }> {
+  return db.transaction().execute(async (transaction) => {
+    const { name, sha256 } = await requireList(transaction, permit, listId)
+    if (!(await deleteUnusedList(transaction, listId))) {
+      throw conflict('was-in-force', `${name} has been in force, so it stays on record. Retire it instead.`)
+    }
+    await record(transaction, permit, 'matching.list-discarded', name, { list: listId, sha256 })
     return { name }
   })
 }

@@ -88,6 +88,21 @@ describe('the same place in another campaign', () => {
     await db.destroy()
   })
 
+  it('is told within the own radius, however far the other campaign looks', async () => {
+    const { db, otherCampaign, lead, permit, a } = await closeScenario()
+    await addMember(db, otherCampaign, lead, 'viewer', 'S07')
+    await db.updateTable('campaign').set({ match_radius_arcsec: 30 }).where('id', '=', otherCampaign.id).execute()
+    for (const arcsec of [1.9, 2.1]) {
+      await addImagedCandidate(db, otherCampaign, `South ${arcsec}`, { raDeg: 150, decDeg: arcsec / 3600 })
+    }
+    await match(db, otherCampaign.id)
+    const found = await db.selectFrom('candidate_match').select('second_id').where('first_id', '=', a).execute()
+    expect(found.length, 'both are kept, for the campaign that looks further').toBeGreaterThanOrEqual(2)
+    const seen = (await candidateMatches(db, await permit(lead, 'read'), a))?.elsewhere.map(({ name }) => name)
+    expect(seen).toEqual(['South 1.9'])
+    await db.destroy()
+  })
+
   it('tells somebody who grades there only what they have judged and what is decided, so that no stamp is missing', async () => {
     const { db, campaign, otherCampaign, lead, graders, permit, a, b } = await closeScenario()
     await addMember(db, otherCampaign, graders[0], 'lead', 'S07')

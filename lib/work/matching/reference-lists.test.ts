@@ -8,7 +8,7 @@ import { JOB } from '@/lib/platform/jobs/job-kinds'
 import { log } from '@/lib/platform/log'
 import { BlobStore } from '@/lib/platform/storage/blob-store'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
-import { bringBackList, changeList, changeMatchRadius, retireList, takeInList } from './change-list'
+import { bringBackList, changeList, changeMatchRadius, discardList, retireList, takeInList } from './change-list'
 import { knownLabels } from './known-labels'
 import { knownList, knownPage } from './known-page'
 import { ListDetails } from './list-details'
@@ -224,6 +224,29 @@ describe('a reference list', () => {
     await expect(bringBackList(scenario.db, await lead(), id)).rejects.toThrow(/not retired/)
   })
 
+  it('that was never in force can be thrown away and sent again; one that was stays on record', async () => {
+    const { db } = scenario
+    const draft = await upload(LIST)
+    expect(await discardList(db, await lead(), draft.id)).toEqual({ name: 'marsh-lenses' })
+    expect((await knownPage(db, await lead())).lists).toEqual([])
+    const refused = await upload(SWAPPED)
+    await takeIn(refused.id)
+    await discardList(db, await lead(), refused.id)
+    const again = await upload(LIST)
+    expect(again.isNew).toBe(true)
+    await takeIn(again.id)
+    await expect(discardList(db, await lead(), again.id)).rejects.toMatchObject({ status: 409, type: 'was-in-force' })
+    await retireList(db, await lead(), again.id)
+    await expect(discardList(db, await lead(), again.id)).rejects.toMatchObject({ status: 409, type: 'was-in-force' })
+    await expect(discardList(db, await lead(), 999)).rejects.toMatchObject({ status: 404 })
+    const events = await db
+      .selectFrom('audit_event')
+      .select('action')
+      .where('action', '=', 'matching.list-discarded')
+      .execute()
+    expect(events).toHaveLength(2)
+  })
+
   it('cannot be changed while it is read, nor read while it is retired', async () => {
     const { id } = await upload(LIST)
     const { mapping } = await lookAtUpload(scenario.db, await lead(), tools, id, null)
@@ -254,6 +277,7 @@ describe('a reference list', () => {
     const { permitCampaign } = await import('@/lib/work/people/permission')
     const elsewhere = await permitCampaign(db, stranger, otherCampaign.slug, 'lead')
     await expect(retireList(db, elsewhere, id)).rejects.toThrow(/no list here/)
+    await expect(discardList(db, elsewhere, id)).rejects.toThrow(/no list here/)
     await expect(lookAtUpload(db, elsewhere, tools, id, null)).rejects.toThrow(/no list here/)
   })
 })

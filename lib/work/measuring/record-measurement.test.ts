@@ -4,6 +4,7 @@ import { fromJson, type Json } from '@/db/schema/values'
 import { addPicturedCandidate } from '@/tests/_support/pictured-candidate'
 import { makeScenario, type Scenario } from '@/tests/_support/scenario'
 import type { Fitted } from './fitted'
+import { giveGrade } from '@/lib/work/consensus/_give-grade'
 import { measure, measurementInput, onCircle } from './_measurements'
 import { MeasurementInput } from './measurement-input'
 import { recordMeasurement } from './record-measurement'
@@ -69,6 +70,17 @@ describe('a measurement', () => {
     expect(JSON.parse(row.cosmology!)).toMatchObject({ hubble: 70, omegaMatter: 0.3 })
   })
 
+  it('stands without a mass where the candidate’s own redshifts put the source before the lens', async () => {
+    await scenario.db
+      .updateTable('candidate')
+      .set({ lens_redshift: 0.9, source_redshift: 0.5 })
+      .where('id', '=', candidate)
+      .execute()
+    const given = { basis: 'given' }
+    await measure(scenario, scenario.graders[0], candidate, { redshifts: { lens: given, source: given } })
+    expect(await rows()).toMatchObject([{ lens_redshift: 0.9, source_redshift: 0.5, mass: null }])
+  })
+
   it('of a model that was fitted is fitted again here, whatever lens was sent with the points', async () => {
     const images = [
       { east: 1.5, north: 0 },
@@ -109,6 +121,32 @@ describe('is refused, and nothing is kept,', () => {
     await refused(measure(scenario, fourth, candidate), { status: 409, type: 'grade-first' })
     const other = await addPicturedCandidate(scenario, 'SWS-2', { grades: 'AAAU' })
     await refused(measure(scenario, fourth, other), { status: 409, type: 'grade-first' })
+  })
+
+  it('to a grader who had judged when it was sent and could not judge any more when it is kept', async () => {
+    const [grader] = scenario.graders
+    const permit = await scenario.permit(grader, 'grade')
+    const { db } = scenario
+    const own = db.selectFrom('grade').select('id').where('person_id', '=', grader.id)
+    const { id: replaces } = await own.where('candidate_id', '=', candidate).executeTakeFirstOrThrow()
+    const between = new Proxy(db, {
+      get(target, name) {
+        if (name === 'transaction') {
+          return () => ({
+            execute: async (work: Parameters<ReturnType<typeof db.transaction>['execute']>[0]) => {
+              await giveGrade(target, scenario.campaign, candidate, grader, 'U', { replaces })
+              return target.transaction().execute(work)
+            },
+          })
+        }
+        const value: unknown = Reflect.get(target, name, target)
+        return typeof value === 'function' ? (value.bind(target) as unknown) : value
+      },
+    })
+    await refused(recordMeasurement(between, permit, candidate, measurementInput()), {
+      status: 409,
+      type: 'grade-first',
+    })
   })
 
   it('to a viewer and to a stranger, who get no permit for it', async () => {

@@ -125,13 +125,17 @@ async function recipeOfView(
 function workOut(input: MeasurementInput, context: MeasuringContext) {
   try {
     const found = fitShape(input.shape, input.points, context)
-    return { ...found, mass: massOf(found, context) }
+    return { ...found, mass: areImpossible(context) ? null : massOf(found, context) }
   } catch (error) {
     const sentence = measuringRefusal(error)
     if (sentence === null) throw error
     throw invalid(sentence)
   }
 }
+
+/** Redshifts that came with the candidate and cannot be are nobody's mistake here: the radius is kept, without a mass. */
+const areImpossible = ({ lens, source }: MeasuringContext): boolean =>
+  lens?.basis === 'given' && source?.basis === 'given' && source.value <= lens.value
 
 function redshiftColumns<Of extends 'lens' | 'source'>(of: Of, used: UsedRedshift | null) {
   return {

@@ -4,7 +4,7 @@ import { revalidatePath } from 'next/cache'
 import { redirect } from 'next/navigation'
 import { permitLead } from '@/app/_lib/action-permit'
 import { failedForm, type FormState } from '@/app/_lib/form-state'
-import { bringBackList, changeList, retireList, takeInList } from '@/lib/work/matching/change-list'
+import { bringBackList, changeList, discardList, retireList, takeInList } from '@/lib/work/matching/change-list'
 import { parseDetailsForm } from '@/lib/work/matching/list-details'
 import { parseMappingField } from '@/lib/work/matching/list-mapping'
 
@@ -75,4 +75,21 @@ export async function bringBackListAction(
   } catch (error) {
     return failedForm(error, form)
   }
+}
+
+/** Takes a list away that was never in force, and goes back to the others. */
+export async function discardListAction(
+  slug: string,
+  listId: number,
+  _before: FormState,
+  form: FormData,
+): Promise<FormState> {
+  try {
+    const { db, permit } = await permitLead(slug)
+    await discardList(db, permit, listId)
+  } catch (error) {
+    return failedForm(error, form)
+  }
+  revalidatePath(`/campaigns/${slug}`, 'layout')
+  redirect(`/campaigns/${slug}/known`)
 }

@@ -6,7 +6,13 @@ import { Problem } from '@/lib/platform/problems/problem'
 import { knownList } from '@/lib/work/matching/known-page'
 import { listReader } from '@/lib/work/matching/list-reader'
 import { lookAtUpload } from '@/lib/work/matching/upload-list'
-import { bringBackListAction, changeListAction, retireListAction, takeInListAction } from '../actions'
+import {
+  bringBackListAction,
+  changeListAction,
+  discardListAction,
+  retireListAction,
+  takeInListAction,
+} from '../actions'
 
 export const metadata = { title: 'List of known objects' }
 
@@ -30,6 +36,7 @@ export default async function KnownListRoute({ params }: PageProps<'/campaigns/[
       takeInAction={takeInListAction.bind(null, slug, id)}
       changeAction={changeListAction.bind(null, slug, id)}
       retireAction={retireListAction.bind(null, slug, id)}
+      discardAction={discardListAction.bind(null, slug, id)}
       bringBackAction={bringBackListAction.bind(null, slug, id)}
     />
   )
