@@ -6,6 +6,9 @@ export default defineConfig({
     alias: { 'server-only': new URL('./tests/_server-only.ts', import.meta.url).pathname },
   },
   test: {
+    // Far above what a test takes: machines are shared, and a slow one is no fault of the code.
+    testTimeout: 30_000,
+    hookTimeout: 60_000,
     projects: [
       {
         extends: true,

@@ -11,7 +11,7 @@ import { useLightKeys } from './use-light-keys'
 
 let pictures: Uint8ClampedArray[]
 let asked: string[]
-let answer: () => Response
+let answer: () => Response | Promise<Response>
 let serial = 0
 
 // What the page fetches when Light is first opened.
@@ -240,9 +240,13 @@ describe('the choice', () => {
 
 describe('arrow keys pressed before the pixels are here', () => {
   const blackAfter = async (keys: string) => {
+    let send = () => {}
+    const sent = new Promise<void>((resolve) => (send = resolve))
+    answer = () => sent.then(planesAnswer)
     const { user, unmount } = open()
     await user.keyboard('l')
     if (keys) await user.keyboard(keys)
+    send()
     await live()
     await frame()
     const found = [slider('Black').value, screen.queryByText('changed') !== null]
