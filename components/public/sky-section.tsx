@@ -3,6 +3,7 @@ import type { ReleaseSky } from '@/lib/work/releases/release-sky'
 import type { ReleaseLinks } from './release-links'
 
 const CLASS_WORDS = { A: 'A sure', B: 'B probable', C: 'C possible' }
+const CLASSES = ['A', 'B', 'C'] as const
 const CELLS_LISTED = 30
 
 /** The map of a release with what it says in words, and where it shows densities their numbers. */
@@ -26,7 +27,7 @@ export function SkySection({ sky, links }: { sky: ReleaseSky; links: ReleaseLink
       <figcaption className="flex flex-col gap-1 text-note text-mute">
         {sky.kind === 'points' ? (
           <span className="flex flex-wrap items-center gap-x-4">
-            {(['A', 'B', 'C'] as const).map((one) => (
+            {CLASSES.filter((one) => sky.points.some((point) => point.class === one)).map((one) => (
               <span key={one} className="flex items-center gap-1.5">
                 <svg width="10" height="10" aria-hidden="true">
                   <circle cx="5" cy="5" r="4" fill={`var(--grade-${one.toLowerCase()})`} stroke="var(--text)" />

@@ -6,6 +6,7 @@ import { FormSection } from '@/components/campaigns/form-section'
 import { FormNote } from '@/components/people/form-note'
 import { useKeptForm } from '@/components/people/use-kept-form'
 import { Button } from '@/components/ui/button'
+import { Notice } from '@/components/ui/notice'
 import { TextArea, TextField } from '@/components/ui/field'
 import type { ReleaseKind } from '@/db/schema/releases'
 import type { PublishScreenProps } from './publish-screen'
@@ -50,6 +51,15 @@ export function PublishForm({ home, campaign, survey, year, licences, preview, k
               />
             ))}
           </fieldset>
+          {wanted === 'erratum' && preview.enteredCount + preview.leftCount === 0 ? (
+            <Notice>
+              No entry has come or gone since release {preview.before}. Its changes.csv will tell whether anything else
+              is otherwise: see that what was wrong is put right before this is frozen.
+            </Notice>
+          ) : null}
+          {wanted === 'retraction' ? (
+            <Notice>A retraction holds none of the candidates counted above: only its reason and the metadata.</Notice>
+          ) : null}
           {wanted === 'release' ? null : (
             <>
               <label className="flex flex-col gap-1 text-small font-semibold">
