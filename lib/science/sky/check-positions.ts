@@ -7,7 +7,7 @@ import type { AngleUnit } from './guess-columns'
 import type { Positions } from './position-index'
 
 export interface PositionProblem {
-  kind: 'hours' | 'swapped' | 'out-of-range' | 'missing' | 'unreadable'
+  kind: 'hours' | 'perhaps-hours' | 'swapped' | 'out-of-range' | 'missing' | 'unreadable'
   /** places of the rows that it holds for, at most the first 20 */
   rows: number[]
   /** how many rows in all */
@@ -102,9 +102,15 @@ export function checkPositions(
     add('out-of-range', outside, message)
   }
   // On a sky of ten positions or more all within 24 degrees of RA and spread in declination, hours are the likelier reading.
-  if (units.ra === 'deg' && usable >= 10 && mostRa <= 24 && mostDec - leastDec > 30) {
+  // Fewer can be so by chance (24/360 cubed, one in 3,400, for three anywhere): told, for a person to look.
+  if (units.ra === 'deg' && usable >= 3 && mostRa <= 24 && mostDec - leastDec > 30) {
     const all = new Rows()
     for (let k = 0; k < count; k++) if (!Number.isNaN(positions.raDeg[k])) all.add(k)
+    if (usable < 10) {
+      const few = `All ${usable} right ascensions are between 0 and 24: see whether they are degrees or hours.`
+      add('perhaps-hours', all, few)
+      return { positions, usable, problems }
+    }
     const message = `Every right ascension is between 0 and 24 while declinations span ${Math.round(mostDec - leastDec)} degrees: they are probably hours, not degrees.`
     add('hours', all, message)
   }

@@ -84,6 +84,16 @@ describe('a look at a list', () => {
     expect(sentences(named.findings)).not.toMatch(/holds values/)
   })
 
+  it('asks whether a few right ascensions below 24 all over the sky are hours, and takes them in as they are', async () => {
+    const few = 'name,ra,dec\na,10.5,2\nb,12.1,3\nc,23.1,5\nd,2.1,60\n'
+    expect((await lookAt(few)).findings).toEqual([
+      { stops: false, sentence: 'All 4 right ascensions are between 0 and 24: see whether they are degrees or hours.' },
+    ])
+    expect((await readAll(few)).read).toMatchObject({ rows: 4 })
+    expect((await lookAt('ra,dec\n10.5,2\n12.1,3\n23.1,5\n2.1,6\n')).findings).toEqual([])
+    expect((await lookAt('ra,dec\n10.5,2\n12.1,3\n33.1,5\n2.1,60\n')).findings).toEqual([])
+  })
+
   it('refuses bytes that are no text, and takes UTF-16 and a stray control character', async () => {
     const noise = fileOf(Uint8Array.from({ length: 5000 }, (_, k) => (k * 7 + 44) % 256))
     expect(await look({ ...noise, mapping: null })).toEqual({

@@ -164,7 +164,10 @@ interface RawPlaces {
   dec: (string | number)[]
 }
 
-/** Missing positions are told; everything else that is wrong stops the list. */
+const isOfHours = (kind: PositionProblem['kind']) => kind === 'hours' || kind === 'perhaps-hours'
+const MERELY_TOLD: ReadonlySet<PositionProblem['kind']> = new Set(['missing', 'perhaps-hours'])
+
+/** Missing positions and a doubt about few are told; everything else that is wrong stops the list. */
 function checked(
   file: ListFile,
   mapping: ListMapping,
@@ -178,11 +181,11 @@ function checked(
   const { positions, usable, problems } = checkPositions(ra, dec, units, names)
   const isGalactic = mapping.frame === 'GALACTIC'
   const findings = problems
-    .filter(({ kind }) => !(isGalactic && kind === 'hours'))
-    .map((problem) => ({ sentence: inFrame(adviceFor(problem), isGalactic), stops: problem.kind !== 'missing' }))
+    .filter(({ kind }) => !(isGalactic && isOfHours(kind)))
+    .map((problem) => ({ sentence: inFrame(adviceFor(problem), isGalactic), stops: !MERELY_TOLD.has(problem.kind) }))
   if (usable === 0)
     findings.push({ sentence: 'No row has a position that can be used; nothing would match.', stops: true })
-  const rowsAtFault = problems.flatMap(({ kind, rows }) => (kind === 'hours' ? [] : rows))
+  const rowsAtFault = problems.flatMap(({ kind, rows }) => (isOfHours(kind) ? [] : rows))
   const faulty = [...new Set(rowsAtFault)].sort((a, b) => a - b)
   return {
     positions: inIcrs(positions, mapping.frame),
