@@ -43,10 +43,15 @@ export function ImagesTable({ images, delays }: { images: readonly FittedImage[]
                 {arcsec(east)}, {arcsec(north)}
               </td>
               <td>{magnificationInWords(magnification)}</td>
-              <td title={kind === 'minimum' ? 'minimum of the arrival time' : 'saddle point: mirrored'}>
+              <td
+                className="whitespace-nowrap"
+                title={kind === 'minimum' ? 'minimum of the arrival time' : 'saddle point: mirrored'}
+              >
                 {kind === 'minimum' ? '+' : '− mirrored'}
               </td>
-              {delays ? <td>{delayDays === null ? '' : delayInWords(delayDays)}</td> : null}
+              {delays ? (
+                <td className="whitespace-nowrap pl-2">{delayDays === null ? '' : delayInWords(delayDays)}</td>
+              ) : null}
             </tr>
           ))}
         </tbody>

@@ -7,6 +7,7 @@ import { SkySection } from './sky-section'
 it('says of the classes on its map what they mean, and names no other', () => {
   const points = (['A', 'B'] as const).map((one, at) => ({
     key: one,
+    rowNumber: at + 1,
     designation: `SWS ${one}`,
     raDeg: 10 + at / 10,
     decDeg: 20,
