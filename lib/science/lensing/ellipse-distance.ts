@@ -39,7 +39,8 @@ function distanceInQuadrant(a: number, b: number, u: number, v: number): number 
     const slope = -2 * ((a * u) ** 2 / (t + a * a) ** 3 + (b * v) ** 2 / (t + b * b) ** 3)
     const newton = t - value / slope
     const next = newton > low && newton < high ? newton : (low + high) / 2
-    if (Math.abs(next - t) <= 1e-16 * (a * a + Math.abs(t))) break
+    // In units of t + b^2: of a point on the major axis but for rounding the search begins at a pole there and doubles its steps.
+    if (Math.abs(next - t) <= 1e-15 * (t + b * b)) break
     t = next
   }
   return Math.hypot((a * a * u) / (t + a * a) - u, (b * b * v) / (t + b * b) - v)

@@ -6,6 +6,7 @@ import { pixelToSky, readWcs } from '@/lib/science/sky/wcs'
 import { readReference } from './_reference'
 import { ArcFitError } from './clicked-points'
 import { combineRadii } from './combine-measurements'
+import { signedDistance } from './ellipse-distance'
 import { fitCircle, kasaCircle, taubinCircle } from './fit-circle'
 import { fitEllipse } from './fit-ellipse'
 import { SeededRandom } from './seeded-random'
@@ -206,8 +207,26 @@ describe('an ellipse', () => {
           expect(Math.abs(fit.radiusArcsec / major / Math.sqrt(ratio) - 1)).toBeLessThan(1e-4)
         },
       ),
+      // The points at its ends lie beside the major axis by rounding alone.
+      { examples: [[5.166591196750108, 0.25, 0, 6]] },
     )
   })
+
+  // By hand: on the axes the nearest point is the end, within a^2 - b^2 over a of it.
+  it.each([0, 1e-300, 1e-17, 1e-16, 3e-16, 1e-12])(
+    'is as far from a point on its major axis but for %d as it is',
+    (off) => {
+      const ellipse = { centre: { east: 0, north: 0 }, semiMajor: 5, semiMinor: 1.25, positionAngleDeg: 0 }
+      for (const [north, distance] of [
+        [5, 0],
+        [-5, 0],
+        [6, 1],
+        [4.9, -0.1],
+      ]) {
+        expect(signedDistance(ellipse, { east: off, north })).toBeCloseTo(distance, 9)
+      }
+    },
+  )
 
   it('of a circle has its radius and no direction', () => {
     const random = new SeededRandom(5)
