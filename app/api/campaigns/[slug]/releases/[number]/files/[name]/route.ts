@@ -2,6 +2,7 @@ import { z } from 'zod'
 import { route } from '@/app/api/_lib/route'
 import { storedFileResponse } from '@/app/api/_lib/stored-file-response'
 import { blobs } from '@/lib/platform/storage/blobs'
+import { savedName } from '@/lib/work/releases/release-files'
 import { openReleaseFile, releaseToRead } from '@/lib/work/releases/read-release'
 
 /**
@@ -14,7 +15,7 @@ export const GET = route({
   handler: async ({ request, db, viewer, params, query }) => {
     const release = await releaseToRead(db, params.slug, params.number, { viewer, token: query.key ?? null })
     const file = await openReleaseFile(db, blobs(), release, params.name)
-    const fileName = `${release.slug}-release-${release.number}-${file.name}`
+    const fileName = savedName(release, file.name)
     return storedFileResponse(request, file, { fileName, shared: release.access === 'public' })
   },
 })
