@@ -1,6 +1,7 @@
 import { NextRequest } from 'next/server'
 import { afterEach, beforeEach, expect, it, vi } from 'vitest'
 import { USUAL_RANGES } from '@/lib/science/lensing/painting/painting-ranges'
+import { practiceHalf } from '@/lib/work/calibration/practice-half'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 
@@ -54,8 +55,21 @@ it('an order that cannot be is refused with the field and the sentence', async (
   expect(JSON.stringify(await response.json())).toContain('3 stamps take as many galaxies, and 1 are chosen')
 })
 
+/** Chooses the site's secret so that the first grader has the stamp to practise on. */
+async function keepForPractice(stamp: number): Promise<void> {
+  const who = { campaignId: scenario.campaign.id, personId: scenario.graders[0].id }
+  for (let n = 0; ; n++) {
+    await scenario.db
+      .replaceInto('site')
+      .values({ key: 'queue-secret', value: `secret ${n}` })
+      .execute()
+    if ((await practiceHalf(scenario.db, who)).has(stamp)) return
+  }
+}
+
 it('practice is for graders: its stamp has no truth on the wire, and viewers and strangers get none', async () => {
   await scenario.db.updateTable('candidate').set({ truth: 'lens', explanation: 'Painted.' }).execute()
+  await keepForPractice(id)
   const ask = () => practice(new NextRequest(`${root()}/practice`), context())
   const give = () =>
     answer(
