@@ -16,6 +16,8 @@ export interface SheetScenario extends Scenario {
 export async function makeSheetScenario(candidates: number, stamps = 0): Promise<SheetScenario> {
   const scenario = await makeScenario({ gradesWanted: 2, leastGrades: 1 })
   const { db, campaign, graders } = scenario
+  // What is drawn for whom follows from it.
+  await db.insertInto('site').values({ key: 'queue-secret', value: 'known to this test' }).execute()
   const ids: number[] = []
   for (let n = 0; n < candidates + stamps; n++) ids.push(await addImagedCandidate(db, campaign, `SWS-${n}`))
   await db
