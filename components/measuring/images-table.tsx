@@ -12,7 +12,7 @@ export function ImagesTable({ images, delays }: { images: readonly FittedImage[]
   }
   const total = images.reduce((sum, { magnification }) => sum + Math.abs(magnification ?? Number.POSITIVE_INFINITY), 0)
   return (
-    <div className="relative overflow-x-auto">
+    <div role="region" aria-label="Images of the model" tabIndex={0} className="relative overflow-x-auto">
       <table className="figures w-full text-note">
         <caption className="pb-1 text-left font-sans text-note text-mute">
           {images.length} {images.length === 1 ? 'image' : 'images'}

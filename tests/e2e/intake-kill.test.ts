@@ -72,6 +72,8 @@ function stampNames(dataFolder: string): Set<string> {
   const folder = path.join(dataFolder, 'stamps')
   expect(existsSync(folder)).toBe(true)
   const entries = readdirSync(folder, { recursive: true, withFileTypes: true })
-  names = new Set(entries.filter((entry) => entry.isFile()).map(({ name }) => name.replace(/\..*$/, '')))
+  // A name may be a link to the file of its task: one that leads nowhere does not exist.
+  const whole = entries.filter(({ parentPath, name }) => existsSync(path.join(parentPath, name)))
+  names = new Set(whole.map(({ name }) => name))
   return names
 }
