@@ -19,7 +19,9 @@ const AIM_FLOOR = 1.5
 
 /** Pixels of every stamp, for the floors. */
 async function decodeStamps(folder: string): Promise<Picture[]> {
-  const names = (await readdir(folder, { recursive: true, withFileTypes: true })).filter((entry) => entry.isFile())
+  const names = (await readdir(folder, { recursive: true, withFileTypes: true })).filter(({ name }) =>
+    /^[0-9a-f]{64}$/.test(name),
+  )
   const pictures: Picture[] = []
   for (const entry of names) {
     const bytes = await readStamp(folder, entry.name)
