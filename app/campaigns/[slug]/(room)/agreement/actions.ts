@@ -1,9 +1,8 @@
 'use server'
 
-import { revalidatePath } from 'next/cache'
-import { redirect } from 'next/navigation'
 import { permitLead } from '@/app/_lib/action-permit'
-import { failedForm, type FormState } from '@/app/_lib/form-state'
+import type { FormState } from '@/app/_lib/form-state'
+import { roomAction } from '@/app/_lib/room-action'
 import { leaveOut } from '@/lib/work/consensus/leave-out'
 
 /** Leaves a grader out or counts them again, and goes back to the page that says so. */
@@ -13,13 +12,9 @@ export async function leaveOutAction(
   isOut: boolean,
   _before: FormState,
   form: FormData,
-): Promise<FormState> {
-  try {
-    const { db, permit } = await permitLead(slug)
+) {
+  return roomAction(permitLead, slug, form, async ({ db, permit }) => {
     await leaveOut(db, permit, { personId, leftOut: isOut, reason: String(form.get('reason') ?? '') })
-  } catch (error) {
-    return failedForm(error, form)
-  }
-  revalidatePath(`/campaigns/${slug}`, 'layout')
-  redirect(`/campaigns/${slug}/agreement`)
+    return { goTo: `/campaigns/${slug}/agreement` }
+  })
 }
