@@ -1,6 +1,6 @@
 import { sql, type Kysely } from 'kysely'
 import type { DB } from '../schema'
-import type { EvidenceAnswer } from './verdicts'
+import { asEvidence, type EvidenceAnswer } from './verdicts'
 
 /**
  * Standing answers that came when the candidate had all its looks, in order of their ids.
@@ -11,31 +11,11 @@ export async function listLateAnswersOf(
   candidateId: number,
   by: number | null,
 ): Promise<EvidenceAnswer[]> {
-  return db
-    .selectFrom('grade')
-    .innerJoin('person', 'person.id', 'grade.person_id')
-    .leftJoin('membership', (join) =>
-      join
-        .onRef('membership.person_id', '=', 'grade.person_id')
-        .onRef('membership.campaign_id', '=', 'grade.campaign_id'),
-    )
-    .select([
-      'grade.id',
-      'grade.person_id as personId',
-      'person.name',
-      'membership.pseudonym',
-      'grade.grade',
-      'grade.occasion',
-      'grade.tags',
-      'grade.remark',
-      'grade.seconds',
-      'grade.given_at as givenAt',
-    ])
+  return asEvidence(db.selectFrom('grade'))
     .where('grade.candidate_id', '=', candidateId)
     .where('grade.occasion', '=', 'late')
     .where(sql<boolean>`not exists (select 1 from grade later where later.replaces = grade.id)`)
     .$if(by !== null, (query) => query.where('grade.person_id', '=', by))
-    .orderBy('grade.id')
     .execute()
 }
 

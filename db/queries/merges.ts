@@ -36,8 +36,8 @@ export interface StandingMerge {
   at: IsoTime
 }
 
-/** Merges that hold: of each merged candidate the newest event, where it is no parting. */
-function standingMerges(db: Kysely<DB>) {
+/** Merges and partings, with the names of whom they concern. */
+function mergeEvents(db: Kysely<DB>) {
   return db
     .selectFrom('merge')
     .innerJoin('candidate as kept', 'kept.id', 'merge.kept_id')
@@ -50,6 +50,7 @@ function standingMerges(db: Kysely<DB>) {
     )
     .select([
       'merge.id',
+      'merge.event',
       'merge.kept_id as keptId',
       'kept.name as keptName',
       'merge.merged_id as mergedId',
@@ -61,6 +62,11 @@ function standingMerges(db: Kysely<DB>) {
       'merge.ruling_before_id as rulingBeforeId',
       'merge.created_at as at',
     ])
+}
+
+/** Merges that hold: of each merged candidate the newest event, where it is no parting. */
+function standingMerges(db: Kysely<DB>) {
+  return mergeEvents(db)
     .where('merge.event', '=', 'merged')
     .where((e) =>
       e.not(
@@ -94,35 +100,13 @@ export async function listStandingMerges(db: Kysely<DB>, campaignId: number, lim
     .execute()
 }
 
-export interface MergeEvent extends Omit<StandingMerge, 'rulingBeforeId'> {
+export interface MergeEvent extends StandingMerge {
   event: Merge['event']
 }
 
 /** Every merge and parting that this candidate had a part in, oldest first. */
 export async function listMergeEvents(db: Kysely<DB>, candidateId: number): Promise<MergeEvent[]> {
-  return db
-    .selectFrom('merge')
-    .innerJoin('candidate as kept', 'kept.id', 'merge.kept_id')
-    .innerJoin('candidate as merged', 'merged.id', 'merge.merged_id')
-    .innerJoin('person', 'person.id', 'merge.person_id')
-    .leftJoin('membership', (join) =>
-      join
-        .onRef('membership.person_id', '=', 'merge.person_id')
-        .onRef('membership.campaign_id', '=', 'merge.campaign_id'),
-    )
-    .select([
-      'merge.id',
-      'merge.event',
-      'merge.kept_id as keptId',
-      'kept.name as keptName',
-      'merge.merged_id as mergedId',
-      'merged.name as mergedName',
-      'merge.reason',
-      'person.name as by',
-      'membership.pseudonym',
-      'merge.ruling_id as rulingId',
-      'merge.created_at as at',
-    ])
+  return mergeEvents(db)
     .where((e) => e.or([e('merge.kept_id', '=', candidateId), e('merge.merged_id', '=', candidateId)]))
     .orderBy('merge.id')
     .execute()

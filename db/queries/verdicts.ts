@@ -56,17 +56,9 @@ export interface EvidenceAnswer {
   givenAt: IsoTime
 }
 
-/**
- * The counted answers of one candidate with who gave them, in order of their ids.
- * @param upTo as they stood when that was the newest grade; without, as they stand now
- * @param graderId a grader who is shown them
- */
-export async function listAnswersOf(
-  db: Kysely<DB>,
-  candidateId: number,
-  { upTo, graderId }: { upTo?: number; graderId?: number } = {},
-): Promise<EvidenceAnswer[]> {
-  return countedAnswers(db, upTo)
+/** Grades with who gave them, in order of their ids. */
+export function asEvidence(grades: ReturnType<typeof countedAnswers>) {
+  return grades
     .innerJoin('person', 'person.id', 'grade.person_id')
     .leftJoin('membership', (join) =>
       join
@@ -85,9 +77,22 @@ export async function listAnswersOf(
       'grade.seconds',
       'grade.given_at as givenAt',
     ])
+    .orderBy('grade.id')
+}
+
+/**
+ * The counted answers of one candidate with who gave them, in order of their ids.
+ * @param upTo as they stood when that was the newest grade; without, as they stand now
+ * @param graderId a grader who is shown them
+ */
+export async function listAnswersOf(
+  db: Kysely<DB>,
+  candidateId: number,
+  { upTo, graderId }: { upTo?: number; graderId?: number } = {},
+): Promise<EvidenceAnswer[]> {
+  return asEvidence(countedAnswers(db, upTo))
     .where('grade.candidate_id', '=', candidateId)
     .$if(graderId !== undefined, (query) => query.where(isShownTo(graderId!)))
-    .orderBy('grade.id')
     .execute()
 }
 

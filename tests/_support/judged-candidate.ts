@@ -11,7 +11,7 @@ export interface Judged {
   /** One letter a grader, in the order of the scenario's graders; a blank passes one over. */
   grades: string
   position?: { raDeg: number; decDeg: number }
-  remark?: string
+  remark?: string | null
   tags?: string[]
 }
 
@@ -35,7 +35,7 @@ export async function giveGrades(
         occasion: 'first',
         grade: letter as GradeLetter,
         tags: toJson(tags),
-        reason: null,
+        reason: letter === 'U' ? 'artefact' : null,
         remark: remark ?? null,
         recipe_id: null,
         view: null,

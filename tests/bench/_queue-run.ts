@@ -8,7 +8,7 @@ import { mkdtemp, rm } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { setTimeout as pause } from 'node:timers/promises'
-import { CompiledQuery, sql, type Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import { openDatabase } from '@/db/connection'
 import { migrateToLatest } from '@/db/migrator'
 import { insertRun } from '@/db/queries/consensus'
@@ -24,6 +24,7 @@ import { recordGrade } from '@/lib/work/grading/record-grade'
 import { permitCampaign } from '@/lib/work/people/permission'
 import type { Viewer } from '@/lib/work/people/viewer'
 import { lendNext } from '@/lib/work/queue/lend-next'
+import { plansOf } from './_query-plans'
 
 const GRADERS = 50
 const STAMPS = 400
@@ -118,28 +119,6 @@ async function addModel(db: Kysely<DB>, campaignId: number, people: readonly Vie
     startedBy: null,
     now: NOW,
   })
-}
-
-/** What SQLite does for the statements of one asking; every plan once. */
-async function plansOf(db: Kysely<DB>, ask: (db: Kysely<DB>) => Promise<unknown>): Promise<string[]> {
-  const statements: CompiledQuery[] = []
-  const watched = db.withPlugin({
-    transformQuery: ({ node, queryId }) => {
-      statements.push(db.getExecutor().compileQuery(node, queryId))
-      return node
-    },
-    transformResult: async ({ result }) => result,
-  })
-  await ask(watched)
-  const plans = new Set<string>()
-  for (const { sql: text, parameters, query } of statements) {
-    if (query.kind !== 'SelectQueryNode' && query.kind !== 'RawNode') continue
-    const raw = CompiledQuery.raw(`explain query plan ${text}`, [...parameters])
-    for (const { detail } of (await db.executeQuery<{ detail: string }>(raw)).rows) {
-      if (/^(SEARCH|SCAN|USE)/.test(detail)) plans.add(detail)
-    }
-  }
-  return [...plans].toSorted()
 }
 
 async function measure(db: Kysely<DB>, candidates: number, mode: QueueMode): Promise<QueueRun> {

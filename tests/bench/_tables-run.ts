@@ -6,7 +6,7 @@
 import { mkdtemp, rm } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
-import { CompiledQuery, sql, type Kysely } from 'kysely'
+import { sql, type Kysely } from 'kysely'
 import { openDatabase } from '@/db/connection'
 import { migrateToLatest } from '@/db/migrator'
 import { requireRule } from '@/db/queries/campaigns'
@@ -26,6 +26,7 @@ import { catalogueTable } from '@/lib/work/catalogue/catalogue-table'
 import type { TableInput } from '@/lib/work/catalogue/table-input'
 import { permitCampaign, type CampaignPermit } from '@/lib/work/people/permission'
 import type { Viewer } from '@/lib/work/people/viewer'
+import { plansOf } from './_query-plans'
 
 const GRADERS = 25
 const LOOKS = 5
@@ -224,28 +225,6 @@ async function measure(
     },
   })
   return timed
-}
-
-/** What SQLite does for the statements of one asking; every plan once. */
-async function plansOf(db: Kysely<DB>, ask: (db: Kysely<DB>) => Promise<unknown>): Promise<string[]> {
-  const statements: CompiledQuery[] = []
-  const watched = db.withPlugin({
-    transformQuery: ({ node, queryId }) => {
-      statements.push(db.getExecutor().compileQuery(node, queryId))
-      return node
-    },
-    transformResult: async ({ result }) => result,
-  })
-  await ask(watched)
-  const plans = new Set<string>()
-  for (const { sql: text, parameters, query } of statements) {
-    if (query.kind !== 'SelectQueryNode' && query.kind !== 'RawNode') continue
-    const raw = CompiledQuery.raw(`explain query plan ${text}`, [...parameters])
-    for (const { detail } of (await db.executeQuery<{ detail: string }>(raw)).rows) {
-      if (/^(SEARCH|SCAN|USE)/.test(detail)) plans.add(detail)
-    }
-  }
-  return [...plans]
 }
 
 const folder = await mkdtemp(join(tmpdir(), 'ringside-tables-'))

@@ -3,10 +3,9 @@ import { mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { findRelease, listReleaseFiles } from '@/db/queries/releases'
-import { toJson } from '@/db/schema/values'
-import type { GradeLetter } from '@/db/schema/grading'
 import { BlobStore } from '@/lib/platform/storage/blob-store'
 import { stampPath } from '@/lib/work/stamps/stamp-store'
+import { giveGrades } from '@/tests/_support/judged-candidate'
 import { addImagedCandidate, makeScenario, type Scenario } from '@/tests/_support/scenario'
 import { makeRelease, type ReleaseTools } from './make-release'
 import { publishRelease } from './publish-release'
@@ -47,7 +46,7 @@ export async function addGraded(
 ): Promise<number> {
   const { db, campaign, tools } = scenario
   const id = await addImagedCandidate(db, campaign, name, { raDeg, decDeg })
-  await giveLetters(scenario, id, grades, remark, tags)
+  await giveGrades(scenario, id, { grades, remark, tags })
   const recipe = await db
     .selectFrom('recipe')
     .select('id')
@@ -72,37 +71,6 @@ export async function addGraded(
     })
     .execute()
   return id
-}
-
-export async function giveLetters(
-  { db, campaign, graders }: Scenario,
-  candidateId: number,
-  grades: string,
-  remark: string | null = null,
-  tags: string[] = [],
-): Promise<void> {
-  for (const [index, letter] of [...grades].entries()) {
-    if (letter === ' ') continue
-    await db
-      .insertInto('grade')
-      .values({
-        uid: `${candidateId}-${index}`,
-        campaign_id: campaign.id,
-        candidate_id: candidateId,
-        person_id: graders[index].id,
-        occasion: 'first',
-        grade: letter as GradeLetter,
-        tags: toJson(tags),
-        reason: letter === 'U' ? 'artefact' : null,
-        remark,
-        recipe_id: null,
-        view: null,
-        seconds: null,
-        replaces: null,
-        given_at: NOW,
-      })
-      .execute()
-  }
 }
 
 export const RELEASE: ReleaseInput = {

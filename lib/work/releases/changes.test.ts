@@ -3,14 +3,8 @@ import { afterEach, beforeEach, expect, it } from 'vitest'
 import { addList } from '@/lib/work/matching/_matching-scenario'
 import { matchList } from '@/lib/work/matching/match-candidates'
 import { ruleOnCandidate } from '@/lib/work/rulings/rule-on-candidate'
-import {
-  addGraded,
-  giveLetters,
-  makeReleaseScenario,
-  publishAndMake,
-  readText,
-  type ReleaseScenario,
-} from './_release-scenario'
+import { giveGrades } from '@/tests/_support/judged-candidate'
+import { addGraded, makeReleaseScenario, publishAndMake, readText, type ReleaseScenario } from './_release-scenario'
 
 let scenario: ReleaseScenario
 let lens: number
@@ -62,7 +56,7 @@ it('are redshifts and known objects, each with what it was', async () => {
 })
 
 it('are votes and what follows from them, and remarks', async () => {
-  await giveLetters(scenario, lens, '   B', 'Only one arc.')
+  await giveGrades(scenario, lens, { grades: '   B', remark: 'Only one arc.' })
   const { rows } = await changed()
   expect(rows).toEqual([
     'lens: grades A 3, B 0, C 0, N 0, 0 cannot judge -> A 3, B 1, C 0, N 0, 0 cannot judge',
