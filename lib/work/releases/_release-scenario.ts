@@ -35,8 +35,6 @@ export async function makeReleaseScenario(rule: Parameters<typeof makeScenario>[
   }
 }
 
-const NOW = '2026-02-03T04:05:06.000Z'
-
 /** A candidate with a colour stamp (bytes that stand for a picture) and first grades, a letter a grader; a blank passes one over. */
 export async function addGraded(
   scenario: ReleaseScenario,
