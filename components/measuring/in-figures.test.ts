@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { arcsec, delayInWords, magnificationInWords, powerOfTen, threeDigits, withError } from './in-figures'
+import { arcsec, delayInWords, inField, magnificationInWords, powerOfTen, threeDigits, withError } from './in-figures'
 
 describe('figures', () => {
   it.each([
@@ -38,4 +38,14 @@ describe('figures', () => {
       'no bound',
     ])
   })
+})
+
+it('a field shows no minus before a zero and keeps a plain one before a number', () => {
+  expect([-0.0004, -0, 0.0004, -0.02, -12.5].map((value) => inField(value, 2))).toEqual([
+    '0.00',
+    '0.00',
+    '0.00',
+    '-0.02',
+    '-12.50',
+  ])
 })

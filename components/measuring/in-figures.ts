@@ -16,6 +16,12 @@ export function withError(value: number, error: number | null, unit = ''): strin
 /** With a true minus, and none before a zero. */
 export const signed = (text: string): string => (/^-0\.?0*$/.test(text) ? text.slice(1) : text.replace('-', '−'))
 
+/** For a field that is typed in: a plain minus, and none before a zero. */
+export function inField(value: number, decimals: number): string {
+  const text = value.toFixed(decimals)
+  return Number(text) === 0 ? text.replace('-', '') : text
+}
+
 export const arcsec = (value: number, decimals = 2): string => `${signed(value.toFixed(decimals))}″`
 
 /** `1.2 × 10¹¹`, with as many digits of the value. */

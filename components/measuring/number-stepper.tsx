@@ -2,6 +2,7 @@
 
 import { useId, useState } from 'react'
 import { numberIn } from './redshift-draft'
+import { inField } from './in-figures'
 
 const BUTTON =
   'grid min-h-8 min-w-8 place-items-center border-edge bg-raise text-body font-semibold hover:bg-line disabled:opacity-40 pointer-coarse:min-h-11 pointer-coarse:min-w-11'
@@ -68,7 +69,7 @@ export function NumberStepper({
           autoComplete="off"
           aria-invalid={fault || undefined}
           aria-describedby={fault ? `${id}-fault` : undefined}
-          value={typed ?? value.toFixed(decimals)}
+          value={typed ?? inField(value, decimals)}
           onChange={(event) => {
             setTyped(event.target.value)
             setRefused(null)
